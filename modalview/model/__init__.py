@@ -1,0 +1,1 @@
+"""What the user drew: frozen parts, their rules and their edits."""

@@ -1,0 +1,101 @@
+"""Values as a person types them, kept as typed, with their tolerance and where they come from."""
+
+from dataclasses import dataclass
+from typing import Any
+
+from modalview.units.parse import read
+from modalview.units.quantities import RATIO, Quantity
+
+
+@dataclass(frozen=True, slots=True)
+class Entry:
+    """A number as it was typed, with the number it means.
+
+    Parameters
+    ----------
+    text : str
+        As typed: "4.2 kN/mm".
+    si : float
+        The same in the SI unit of its quantity.
+    """
+
+    text: str
+    si: float
+
+    @classmethod
+    def typed(cls, text: str, quantity: Quantity) -> "Entry":
+        """Read ``text`` as ``quantity``; raise UnitError when it is not one."""
+        return cls(text, read(text, quantity))
+
+
+@dataclass(frozen=True, slots=True)
+class Tolerance:
+    """How far a value may lie from its nominal, to both sides.
+
+    One of three ways of writing it: ``both`` ("10 %"), ``minus`` and ``plus`` ("10 %", "20 %"),
+    or ``low`` and ``high`` (the file's from and to) in the value's own unit.
+    """
+
+    both: Entry | None = None
+    minus: Entry | None = None
+    plus: Entry | None = None
+    low: Entry | None = None
+    high: Entry | None = None
+
+    @classmethod
+    def symmetric(cls, text: str) -> "Tolerance":
+        """Read "10 %" as plus and minus ten per cent."""
+        return cls(both=Entry.typed(text, RATIO))
+
+    def limits(self, nominal: float) -> tuple[float, float]:
+        """Return the lowest and the highest value, in the unit of ``nominal``."""
+        if self.low is not None and self.high is not None:
+            return self.low.si, self.high.si
+        minus = self.minus or self.both
+        plus = self.plus or self.both
+        return (
+            nominal * (1 - (minus.si if minus else 0.0)),
+            nominal * (1 + (plus.si if plus else 0.0)),
+        )
+
+
+@dataclass(frozen=True, slots=True)
+class Value:
+    """A typed value with what is known about it.
+
+    Parameters
+    ----------
+    entry : Entry
+        The number as typed and in SI.
+    tolerance : Tolerance or None
+        Of this value alone; None leaves it to the part or the model.
+    source, status : str or None
+        Where it comes from, and "datasheet", "measured" or "assumed".
+    by, given : str or None, mapping or None
+        The handbook entry it was computed by, and that entry's dimensions.
+    """
+
+    entry: Entry
+    tolerance: Tolerance | None = None
+    source: str | None = None
+    status: str | None = None
+    by: str | None = None
+    given: tuple[tuple[str, Any], ...] | None = None
+
+    @property
+    def si(self) -> float:
+        """Nominal value in SI."""
+        return self.entry.si
+
+    @property
+    def text(self) -> str:
+        """As typed."""
+        return self.entry.text
+
+    @classmethod
+    def typed(cls, text: str, quantity: Quantity, tolerance: str | None = None) -> "Value":
+        """Read ``text``, with a symmetric tolerance such as "10 %" if given."""
+        return cls(
+            Entry.typed(text, quantity),
+            tolerance=Tolerance.symmetric(tolerance) if tolerance else None,
+        )
