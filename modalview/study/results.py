@@ -1,0 +1,171 @@
+"""What window and command line are given."""
+
+from collections.abc import Callable
+from dataclasses import dataclass
+
+import numpy as np
+import numpy.typing as npt
+
+from modalview.assembly.assemble import Assembly
+from modalview.bounds.before import Bounds
+from modalview.eigen.modes import Modes
+from modalview.model.parts import Model
+from modalview.resonance.results import Check, Verdict
+
+
+def never() -> bool:
+    """Never cancelled."""
+    return False
+
+
+@dataclass(frozen=True, slots=True)
+class Request:
+    """What is to be studied; captures all its inputs, so that it can run anywhere.
+
+    Parameters
+    ----------
+    model : Model
+    number : int
+        Of the request; results of an older number are dropped by who asked.
+    cancelled : callable
+        Asked between steps.
+    progress : callable or None
+        Told (what is done, share done 0..1).
+    """
+
+    model: Model
+    number: int = 0
+    cancelled: Callable[[], bool] = never
+    progress: Callable[[str, float], None] | None = None
+
+
+@dataclass(frozen=True, slots=True)
+class Interval:
+    """Number of modes between two frequencies, for the scale.
+
+    Parameters
+    ----------
+    low_hz, high_hz : float
+        Ends; the last interval is open (infinity).
+    number : int or None
+        Modes inside at nominal values; None is undecided.
+    check : str or None
+        The check whose band this is; None between bands.
+    """
+
+    low_hz: float
+    high_hz: float
+    number: int | None
+    check: str | None = None
+
+
+@dataclass(frozen=True, slots=True)
+class Outlook:
+    """What is known before any solve.
+
+    Parameters
+    ----------
+    request : Request
+    assembly : Assembly
+    bounds : Bounds
+        Discs, norms, lowest and highest mode.
+    checks : tuple of Check
+        Proven by counts; without modes.
+    verdict : Verdict or None
+        The worst of the checks; None when there is nothing to check.
+    sentence : str
+        The verdict in words, for the top of the window.
+    intervals : tuple of Interval
+        Counts on the scale, ascending.
+    not_checked : tuple of str
+        Directions not modelled, orders not listed.
+    notes : tuple of str
+        What the program did with the model: dropped directions, values taken as exact.
+    seconds : float
+        Time it took.
+    """
+
+    request: Request
+    assembly: Assembly
+    bounds: Bounds
+    checks: tuple[Check, ...]
+    verdict: Verdict | None
+    sentence: str
+    intervals: tuple[Interval, ...]
+    not_checked: tuple[str, ...]
+    notes: tuple[str, ...]
+    seconds: float
+
+
+@dataclass(frozen=True, slots=True)
+class Share:
+    """A part's share of a mode's energy."""
+
+    id: str  # id of the parameter, such as "k3.stiffness"
+    label: str
+    fraction: float
+
+
+@dataclass(frozen=True, slots=True, eq=False)
+class FoundMode:
+    """One mode as it is shown.
+
+    Parameters
+    ----------
+    number : int
+        From 1, rigid-body modes included.
+    name : str
+        In words: "baseplate against both".
+    frequency_hz, numerical_error_hz : float
+    range_hz : pair of float
+        Over all tolerances.
+    kind : str
+        "elastic", "rigid-body" or "unstable".
+    repeated_with : tuple of int
+        Numbers of the modes of the same frequency, itself included; empty when alone.
+    strain, kinetic : tuple of Share
+        Largest first; of springs and of masses.
+    motion : array (bodies, 6)
+        x, y, z, rx, ry, rz of every body in the order of the model, largest motion 1 (rotations in
+        radians on the same factor).
+    """
+
+    number: int
+    name: str
+    frequency_hz: float
+    numerical_error_hz: float
+    range_hz: tuple[float, float]
+    kind: str
+    repeated_with: tuple[int, ...]
+    strain: tuple[Share, ...]
+    kinetic: tuple[Share, ...]
+    motion: npt.NDArray[np.float64]
+
+
+@dataclass(frozen=True, slots=True, eq=False)
+class Solution:
+    """The modes, and the checks with what the modes add to them.
+
+    Parameters
+    ----------
+    outlook : Outlook
+        Of the same model.
+    raw : Modes
+        Eigenvalues, shapes and evidence.
+    modes : tuple of FoundMode
+    checks : tuple of Check
+        With nearest modes, separations and drives.
+    sentence : str
+        The verdict in words with the mode that decides it.
+    evidence : tuple of str
+        Why the result can be believed: "3 of 3 found, none missed (proven by counts)".
+    seconds : float
+    """
+
+    outlook: Outlook
+    raw: Modes
+    modes: tuple[FoundMode, ...]
+    checks: tuple[Check, ...]
+    sentence: str
+    evidence: tuple[str, ...]
+    seconds: float
