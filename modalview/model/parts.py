@@ -316,6 +316,15 @@ class DefaultTolerance:
 
 
 @dataclass(frozen=True, slots=True, kw_only=True)
+class ShapePoint:
+    """Measured motion at one point, relative to the others of the same peak."""
+
+    at: End
+    direction: Direction
+    amplitude: float
+
+
+@dataclass(frozen=True, slots=True, kw_only=True)
 class MeasuredPeak:
     """A peak of a bump test or a coast-down."""
 
@@ -324,16 +333,7 @@ class MeasuredPeak:
     uncertainty: Annotated[Entry, q.FREQUENCY] | None = None
     at: End | None = None
     direction: Direction | None = None
-    shape: tuple["ShapePoint", ...] = ()
-
-
-@dataclass(frozen=True, slots=True, kw_only=True)
-class ShapePoint:
-    """Measured motion at one point, relative to the others of the same peak."""
-
-    at: End
-    direction: Direction
-    amplitude: float
+    shape: tuple[ShapePoint, ...] = ()
 
 
 @dataclass(frozen=True, slots=True, kw_only=True)

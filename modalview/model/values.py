@@ -59,6 +59,12 @@ class Tolerance:
         )
 
 
+class JsonObject(tuple[tuple[str, Any], ...]):
+    """A JSON object as its pairs: hashable and immutable, and still told from a list of lists."""
+
+    __slots__ = ()
+
+
 @dataclass(frozen=True, slots=True)
 class Value:
     """A typed value with what is known about it.
@@ -71,8 +77,8 @@ class Value:
         Of this value alone; None leaves it to the part or the model.
     source, status : str or None
         Where it comes from, and "datasheet", "measured" or "assumed".
-    by, given : str or None, mapping or None
-        The handbook entry it was computed by, and that entry's dimensions.
+    by, given : str or None, JsonObject or None
+        The handbook entry it was computed by, and that entry's dimensions: any JSON, with lists as tuples.
     """
 
     entry: Entry
@@ -80,7 +86,7 @@ class Value:
     source: str | None = None
     status: str | None = None
     by: str | None = None
-    given: tuple[tuple[str, Any], ...] | None = None
+    given: JsonObject | None = None
 
     @property
     def si(self) -> float:

@@ -1,0 +1,67 @@
+"""The layout of a model file: indented by two, short objects on one line, lists of parts one a line.
+
+So a file reads like a table where it can, and a changed value changes one line.
+"""
+
+import json
+from typing import Any
+
+WIDTH = 100
+
+
+def laid_out(tree: dict[str, Any]) -> str:
+    """Return the text of a JSON tree, with a newline at the end.
+
+    >>> print(laid_out({"title": "Pump", "bodies": [{"id": "motor", "mass": "620 kg"}]}), end="")
+    {
+      "title": "Pump",
+      "bodies": [
+        {"id": "motor", "mass": "620 kg"}
+      ]
+    }
+    """
+    return _broken(tree, "") + "\n"
+
+
+def _number(number: float) -> str:
+    """Write 7.0 as 7: an order is typed that way."""
+    return json.dumps(
+        int(number) if isinstance(number, float) and number.is_integer() and abs(number) < 1e15 else number
+    )
+
+
+def _one_line(node: Any) -> str | None:
+    """Return a node on one line, or None when it holds a list of parts, which never is."""
+    if isinstance(node, dict):
+        items = [(json.dumps(key, ensure_ascii=False), _one_line(item)) for key, item in node.items()]
+        if any(item is None for _, item in items):
+            return None
+        return "{" + ", ".join(f"{key}: {item}" for key, item in items) + "}"
+    if isinstance(node, list):
+        if any(isinstance(item, dict) for item in node):
+            return None
+        parts = [_one_line(item) for item in node]
+        return None if None in parts else "[" + ", ".join(part or "" for part in parts) + "]"
+    if isinstance(node, float):
+        return _number(node)
+    return json.dumps(node, ensure_ascii=False)
+
+
+def _laid(node: Any, indent: str, used: int) -> str:
+    """Lay out a node that starts after ``used`` columns; a comma may follow it."""
+    line = _one_line(node)
+    if line is not None and (used + len(line) < WIDTH or not isinstance(node, dict | list)):
+        return line
+    return _broken(node, indent)
+
+
+def _broken(node: Any, indent: str) -> str:
+    inner = indent + "  "
+    if isinstance(node, dict):
+        lines = []
+        for key, item in node.items():
+            start = f"{inner}{json.dumps(key, ensure_ascii=False)}: "
+            lines.append(start + _laid(item, inner, len(start)))
+        return "{\n" + ",\n".join(lines) + f"\n{indent}}}" if lines else "{}"
+    lines = [inner + _laid(item, inner, len(inner)) for item in node]
+    return "[\n" + ",\n".join(lines) + f"\n{indent}]"
