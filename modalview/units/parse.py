@@ -15,7 +15,7 @@ from modalview.units.numbers import read_number, split_number
 from modalview.units.quantities import Quantity
 from modalview.units.refusals import no_number, refusal, wrong_unit
 from modalview.units.spelling import unit_key
-from modalview.units.table import GD2_FACTORS, STANDARD_GRAVITY, WR2_FACTORS, find_unit
+from modalview.units.table import GD2_UNITS, STANDARD_GRAVITY, WR2_UNITS, find_unit
 
 # The longest sensible value is some forty characters; more is a pasted paragraph.
 LONGEST_TEXT = 200
@@ -109,13 +109,8 @@ def read_noted(text: str, quantity: Quantity, *, window: bool = False) -> Readin
     >>> read_noted("1092 lb/in", q.STIFFNESS).notes
     ('lb/in read as lbf/in',)
     """
-    plain = text.replace("\u2212", "-").strip()
     try:
-        if not plain:
-            raise UnitError("it is empty; a number and a unit are wanted")
-        if len(text) > LONGEST_TEXT:
-            raise UnitError(f"it is {len(text)} characters long; at most {LONGEST_TEXT} are read")
-        exact = _special(plain, quantity, window=window) or _plain(plain, quantity, window=window)
+        exact = _exact(text, quantity, window=window)
         return Reading(_rounded(exact.amount), exact.notes)
     except UnitError as error:
         raise UnitError(refusal(text, quantity, str(error))) from None
@@ -129,6 +124,15 @@ def unit_of(text: str) -> str:
     """
     parts = split_number(text.replace("\u2212", "-").strip())
     return parts[1].strip() if parts else ""
+
+
+def _exact(text: str, quantity: Quantity, *, window: bool) -> _Exact:
+    plain = text.replace("\u2212", "-").strip()
+    if not plain:
+        raise UnitError("it is empty; a number and a unit are wanted")
+    if len(text) > LONGEST_TEXT:
+        raise UnitError(f"it is {len(text)} characters long; at most {LONGEST_TEXT} are read")
+    return _special(plain, quantity, window=window) or _plain(plain, quantity, window=window)
 
 
 def _plain(text: str, quantity: Quantity, *, window: bool) -> _Exact:
@@ -159,15 +163,16 @@ def _special(text: str, quantity: Quantity, *, window: bool) -> _Exact | None:
 
 def _flywheel(kind: str, value: str, *, window: bool) -> _Exact:
     if kind == "GD":
-        factors, told = GD2_FACTORS, "GD2 divided by 4 to give the moment of inertia"
+        units, told = GD2_UNITS, "GD2 divided by 4 to give the moment of inertia"
     else:
-        factors, told = WR2_FACTORS, f"{kind}2 taken as the moment of inertia"
+        units, told = WR2_UNITS, f"{kind}2 taken as the moment of inertia"
     parts = split_number(value)
-    factor = factors.get(unit_key(parts[1])) if parts else None
-    if parts is None or factor is None:
-        raise UnitError(f"{kind}2 wants a number and one of the units {', '.join(factors)}")
+    unit = units.get(unit_key(parts[1])) if parts else None
+    if parts is None or unit is None:
+        accepted = ", ".join(unit.spelling for unit in units.values())
+        raise UnitError(f"{kind}2 wants a number and one of the units {accepted}")
     amount, note = read_number(parts[0], window=window)
-    return _Exact(amount * factor, (note, told) if note else (told,))
+    return _Exact(amount * unit.factor, (note, told) if note else (told,))
 
 
 def _deflection(deflection: str, load: str, *, window: bool) -> _Exact:

@@ -11,6 +11,7 @@ _TIMES_TEN = re.compile(r"\s*[*x×·]?\s*10\s*(\^|\*\*|[⁰¹²³⁴⁵⁶⁷⁸
 _ARITHMETIC = re.compile(r"\s*[*x×·^/+-]+\s*[0-9(]")
 _GROUPED = re.compile(r"\s+[0-9]")
 _LONGEST_SHOWN = 60
+_ONLY_GD2 = frozenset(unit_key(unit) for unit in ("kgf m2", "kgf cm2", "kgf mm2"))
 
 # Wrong units that have a reason of their own.
 _REASONS: dict[tuple[Quantity, str], str] = {
@@ -30,8 +31,7 @@ _REASONS: dict[tuple[Quantity, str], str] = {
 
 def refusal(text: str, quantity: Quantity, why: str) -> str:
     """Return the whole message: the text, the quantity wanted, why not, and an example."""
-    shown = text if len(text) <= _LONGEST_SHOWN else text[: _LONGEST_SHOWN - 3] + "..."
-    return f'"{shown}" cannot be read as {quantity.name}: {why} (write it like "{quantity.example}")'
+    return f'"{_cut(text)}" cannot be read as {quantity.name}: {why} (write it like "{quantity.example}")'
 
 
 def no_number(text: str, quantity: Quantity) -> str:
@@ -44,38 +44,59 @@ def no_number(text: str, quantity: Quantity) -> str:
 def wrong_unit(number: str, unit_text: str, quantity: Quantity) -> str:
     """Say why what follows the number is not a unit of ``quantity``."""
     key = unit_key(unit_text)
-    written = unit_text.strip()
     if not key:
         return f"the unit is missing; write one of {_listed(quantity)}"
-    if (quantity, key) in _REASONS:
-        return _REASONS[quantity, key]
+    unit = unit_text.strip()
+    return (
+        _REASONS.get((quantity, key))
+        or _computed(number, unit_text)
+        or _gd2_meant(number, unit, quantity)
+        or _case_mistaken(unit, quantity)
+        or _elsewhere(unit, quantity)
+        or f"{_cut(unit)} is not a unit known here; {quantity.name} is written in {_listed(quantity)}"
+    )
+
+
+def _computed(number: str, unit_text: str) -> str:
     if _TIMES_TEN.match(unit_text):
-        return f"powers are not computed; write {number}e6 for {number} million"
+        return f"powers are not computed; write {_cut(number)}e6 for {_cut(number)} million"
     if _ARITHMETIC.match(unit_text):
         return "nothing is computed in a value; write the result as one plain number"
     if _GROUPED.match(unit_text):
         return "a number is written without gaps between its digits"
-    if quantity == q.INERTIA and key in {"kgf m2", "kgf cm2"}:
-        return (
-            f'{written} is the unit of GD2; is GD2 meant? Then write "GD2 {number} {written}", which is J = GD2/4; '
-            "a moment of inertia itself is written in kg m2"
-        )
-    if alike := _differing_in_case(key, quantity):
-        return f"{written} is not a unit; is {' or '.join(alike)} meant? Capitals matter"
-    if other := _other_quantity(key, quantity):
-        return f"{written} is a unit of {other.name}; {quantity.name} is written in {_listed(quantity)}"
-    return f"{written} is not a unit known here; {quantity.name} is written in {_listed(quantity)}"
+    return ""
+
+
+def _gd2_meant(number: str, unit: str, quantity: Quantity) -> str:
+    if quantity != q.INERTIA or unit_key(unit) not in _ONLY_GD2:
+        return ""
+    return (
+        f"{unit} is the unit of GD2; is GD2 meant? "
+        f'Then write "GD2 {_cut(number)} {unit}", which is J = GD2/4; '
+        "a moment of inertia itself is written in kg m2"
+    )
+
+
+def _case_mistaken(unit: str, quantity: Quantity) -> str:
+    folded = unit_key(unit).casefold()
+    found = (known.spelling for key, known in UNITS[quantity].items() if key.casefold() == folded)
+    alike = tuple(dict.fromkeys(found))
+    return f"{unit} is not a unit; is {' or '.join(alike)} meant? Capitals matter" if alike else ""
+
+
+def _elsewhere(unit: str, quantity: Quantity) -> str:
+    key = unit_key(unit)
+    other = next((other for other, units in UNITS.items() if key in units), None)
+    return (
+        f"{unit} is a unit of {other.name}; {quantity.name} is written in {_listed(quantity)}"
+        if other
+        else ""
+    )
 
 
 def _listed(quantity: Quantity) -> str:
     return ", ".join(accepted_spellings(quantity))
 
 
-def _differing_in_case(key: str, quantity: Quantity) -> tuple[str, ...]:
-    folded = key.casefold()
-    found = (unit.spelling for known, unit in UNITS[quantity].items() if known.casefold() == folded)
-    return tuple(dict.fromkeys(found))
-
-
-def _other_quantity(key: str, quantity: Quantity) -> Quantity | None:
-    return next((other for other, units in UNITS.items() if other != quantity and key in units), None)
+def _cut(text: str) -> str:
+    return text if len(text) <= _LONGEST_SHOWN else text[: _LONGEST_SHOWN - 3] + "..."

@@ -28,14 +28,15 @@ _GLUED_AFTER = frozenset({"N", "kN", "MN", "kg", "g"})
 def unit_key(text: str) -> str:
     """Return the key under which the table holds the unit that ``text`` writes.
 
-    Factors of a product are sorted; the divisor is kept as written.
+    Factors of a product are sorted, capitals aside, so that a mistaken capital can be told; the divisor is
+    kept as written.
 
     >>> unit_key("kg·m²"), unit_key("N*m / rad"), unit_key("in lbf/rad")
-    ('kg m2', 'N m/rad', 'in lbf/rad')
+    ('kg m2', 'm N/rad', 'in lbf/rad')
     """
     plain = _POWER.sub("", _PRODUCT.sub(" ", text.translate(_SAME)))
     above, *below = plain.split("/")
-    parts = (" ".join(sorted(above.split())), *(" ".join(part.split()) for part in below))
+    parts = (" ".join(sorted(above.split(), key=str.casefold)), *(" ".join(part.split()) for part in below))
     return "/".join(parts)
 
 

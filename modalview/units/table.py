@@ -221,36 +221,6 @@ _NOTES = {
     (q.ACCELERATION, "g"): "g read as standard gravity, 9.80665 m/s2",
 }
 
-# GD2 is weight times diameter squared, in weight units: J = GD2 / 4 with kgf read as kg, or GD2 / (4 g) in
-# newtons. WR2 (also WK2) is weight times radius of gyration squared: J = WR2. Common practice of the trade.
-GD2_FACTORS: dict[str, Fraction] = {
-    unit_key(unit): factor / 4
-    for unit, factor in {
-        "kgf m2": _ONE,
-        "kg m2": _ONE,
-        "t m2": _KILO,
-        "kgf cm2": _CENTI**2,
-        "kg cm2": _CENTI**2,
-        "kgf mm2": _MILLI**2,
-        "kg mm2": _MILLI**2,
-        "lb ft2": _LB * _FT**2,
-        "lbf ft2": _LB * _FT**2,
-        "N m2": 1 / STANDARD_GRAVITY,
-    }.items()
-}
-WR2_FACTORS: dict[str, Fraction] = {
-    unit_key(unit): factor
-    for unit, factor in {
-        "lb ft2": _LB * _FT**2,
-        "lbf ft2": _LB * _FT**2,
-        "lb in2": _LB * _IN**2,
-        "lbf in2": _LB * _IN**2,
-        "oz in2": _OZ * _IN**2,
-        "kg m2": _ONE,
-        "kgf m2": _ONE,
-    }.items()
-}
-
 
 @dataclass(frozen=True, slots=True)
 class Unit:
@@ -284,6 +254,32 @@ def _units_of(quantity: Quantity, factors: dict[str, Fraction]) -> dict[str, Uni
                 found.setdefault(unit_key(written), Unit(spelling, factor, f"{written} read as {spelling}"))
     return found
 
+
+# GD2 is weight times diameter squared, in weight units: J = GD2 / 4 with kgf read as kg, or GD2 / (4 g) in
+# newtons. WR2 (also WK2) is weight times radius of gyration squared: J = WR2. Common practice of the trade.
+_GD2 = {
+    "kgf m2": _ONE,
+    "kgf cm2": _CENTI**2,
+    "kgf mm2": _MILLI**2,
+    "kg m2": _ONE,
+    "kg cm2": _CENTI**2,
+    "kg mm2": _MILLI**2,
+    "t m2": _KILO,
+    "N m2": 1 / STANDARD_GRAVITY,
+    "lb ft2": _LB * _FT**2,
+    "lbf ft2": _LB * _FT**2,
+}
+_WR2 = {
+    "lb ft2": _LB * _FT**2,
+    "lb in2": _LB * _IN**2,
+    "oz in2": _OZ * _IN**2,
+    "lbf ft2": _LB * _FT**2,
+    "lbf in2": _LB * _IN**2,
+    "kg m2": _ONE,
+    "kgf m2": _ONE,
+}
+GD2_UNITS = {unit_key(spelling): Unit(spelling, factor / 4) for spelling, factor in _GD2.items()}
+WR2_UNITS = {unit_key(spelling): Unit(spelling, factor) for spelling, factor in _WR2.items()}
 
 UNITS: dict[Quantity, dict[str, Unit]] = {
     quantity: _units_of(quantity, factors) for quantity, factors in _FACTORS.items()
