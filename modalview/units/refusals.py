@@ -46,14 +46,14 @@ def wrong_unit(number: str, unit_text: str, quantity: Quantity) -> str:
     key = unit_key(unit_text)
     if not key:
         return f"the unit is missing; write one of {_listed(quantity)}"
-    unit = unit_text.strip()
+    unit = _cut(unit_text.strip())
     return (
         _REASONS.get((quantity, key))
         or _computed(number, unit_text)
-        or _gd2_meant(number, unit, quantity)
-        or _case_mistaken(unit, quantity)
-        or _elsewhere(unit, quantity)
-        or f"{_cut(unit)} is not a unit known here; {quantity.name} is written in {_listed(quantity)}"
+        or _gd2_meant(number, unit, key, quantity)
+        or _case_mistaken(unit, key, quantity)
+        or _elsewhere(unit, key, quantity)
+        or f"{unit} is not a unit known here; {quantity.name} is written in {_listed(quantity)}"
     )
 
 
@@ -67,8 +67,8 @@ def _computed(number: str, unit_text: str) -> str:
     return ""
 
 
-def _gd2_meant(number: str, unit: str, quantity: Quantity) -> str:
-    if quantity != q.INERTIA or unit_key(unit) not in _ONLY_GD2:
+def _gd2_meant(number: str, unit: str, key: str, quantity: Quantity) -> str:
+    if quantity != q.INERTIA or key not in _ONLY_GD2:
         return ""
     return (
         f"{unit} is the unit of GD2; is GD2 meant? "
@@ -77,26 +77,25 @@ def _gd2_meant(number: str, unit: str, quantity: Quantity) -> str:
     )
 
 
-def _case_mistaken(unit: str, quantity: Quantity) -> str:
-    folded = unit_key(unit).casefold()
-    found = (known.spelling for key, known in UNITS[quantity].items() if key.casefold() == folded)
+def _case_mistaken(unit: str, key: str, quantity: Quantity) -> str:
+    folded = key.casefold()
+    found = (known.spelling for other, known in UNITS[quantity].items() if other.casefold() == folded)
     alike = tuple(dict.fromkeys(found))
     return f"{unit} is not a unit; is {' or '.join(alike)} meant? Capitals matter" if alike else ""
 
 
-def _elsewhere(unit: str, quantity: Quantity) -> str:
-    key = unit_key(unit)
+def _elsewhere(unit: str, key: str, quantity: Quantity) -> str:
     other = next((other for other, units in UNITS.items() if key in units), None)
-    return (
-        f"{unit} is a unit of {other.name}; {quantity.name} is written in {_listed(quantity)}"
-        if other
-        else ""
-    )
+    return f"{unit} is a unit of {other.name}, not of {quantity.name}" if other else ""
 
 
 def _listed(quantity: Quantity) -> str:
-    return ", ".join(accepted_spellings(quantity))
+    listed = ", ".join(accepted_spellings(quantity))
+    return f"{listed} or as a plain number" if quantity == q.RATIO else listed
 
 
 def _cut(text: str) -> str:
-    return text if len(text) <= _LONGEST_SHOWN else text[: _LONGEST_SHOWN - 3] + "..."
+    """Return text fit for a message: short, on one line, without what cannot be printed."""
+    spaced = "".join(" " if letter.isspace() else letter for letter in text)
+    plain = "".join(letter if letter.isprintable() else "\N{REPLACEMENT CHARACTER}" for letter in spaced)
+    return plain if len(plain) <= _LONGEST_SHOWN else plain[: _LONGEST_SHOWN - 3] + "..."

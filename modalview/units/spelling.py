@@ -19,8 +19,9 @@ _SAME = str.maketrans(
         "\u00b9": "1",
     }
 )
-# A product sign stands between two units; a hyphen too, as in "lbf-in". Elsewhere they stay and are refused.
-_PRODUCT = re.compile(r"(?<=[A-Za-z0-9]) *[*·] *(?=[A-Za-z])|(?<=[A-Za-z0-9])-(?=[A-Za-z])")
+# A product sign stands between two units; so may a hyphen or a point, as in "lbf-in" and "N.m".
+# Elsewhere they stay and are refused.
+_PRODUCT = re.compile(r"(?<=[A-Za-z0-9]) *[*·] *(?=[A-Za-z])|(?<=[A-Za-z0-9])[-.](?=[A-Za-z])")
 _POWER = re.compile(r"(?<=[A-Za-z])\^(?=[234](?![0-9])|-1(?![0-9]))")
 _GLUED_AFTER = frozenset({"N", "kN", "MN", "kg", "g"})
 

@@ -11,6 +11,7 @@ A slug is 1 lbf s2/ft, a kip 1000 lbf, a mil 0.001 in (trade use, no single sour
 
 from dataclasses import dataclass
 from fractions import Fraction
+from functools import lru_cache
 
 from modalview.units import quantities as q
 from modalview.units.quantities import Quantity
@@ -286,6 +287,7 @@ UNITS: dict[Quantity, dict[str, Unit]] = {
 }
 
 
+@lru_cache(maxsize=1024)  # a file of many values has few unit texts
 def find_unit(text: str, quantity: Quantity) -> Unit | None:
     """Return the unit of ``quantity`` that ``text`` spells, or None.
 

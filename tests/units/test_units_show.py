@@ -49,6 +49,8 @@ def test_a_frequency_has_at_most_five_digits():
 def test_show_si_has_the_plain_unit():
     assert show_si(1.75e8, q.STIFFNESS) == "1.75e8 N/m"
     assert show_si(46.0, q.INERTIA) == "46 kg m2"
+    assert show_si(2950 * math.pi / 30, q.SPEED) == "49.17 Hz"
+    assert show_si(0.15, q.RATIO) == "0.15"
 
 
 def test_an_unknown_system_is_refused():
