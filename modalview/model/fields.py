@@ -63,19 +63,9 @@ class Field:
     default: Any
 
 
-_PLAIN: dict[type, str] = {
-    str: "text",
-    float: "number",
-    int: "integer",
-    Tolerance: "tolerance",
-    JsonObject: "mapping",
-}
-
-
 def _merge(shape: Shape, hint: Any) -> Shape:
+    """Add one type hint to what may stand in a field."""
     origin = get_origin(hint)
-    if hint is NoneType:
-        return shape
     if origin in (Union, UnionType):
         for choice in get_args(hint):
             shape = _merge(shape, choice)
@@ -87,15 +77,24 @@ def _merge(shape: Shape, hint: Any) -> Shape:
         inner = get_args(hint)
         length = None if inner[-1] is Ellipsis else len(inner)
         return replace(shape, items=shape_of(inner[0]), length=length)
-    if hint in _PLAIN:
-        return replace(shape, **{_PLAIN[hint]: True})
+    if is_dataclass(hint) and isinstance(hint, type) and hint not in (Entry, Tolerance):
+        return replace(shape, records=(*shape.records, hint))
     if isinstance(hint, type) and issubclass(hint, StrEnum):
         return replace(shape, choice=hint)
-    if is_dataclass(hint):
-        return replace(shape, records=(*shape.records, hint))
-    if hint is Entry:
-        return shape
-    raise TypeError(f"a field of the model has a type the file cannot hold: {hint!r}")
+    return _merge_plain(shape, hint)
+
+
+def _merge_plain(shape: Shape, hint: Any) -> Shape:
+    if hint not in (str, float, int, Tolerance, JsonObject, Entry, NoneType):
+        raise TypeError(f"a field of the model has a type the file cannot hold: {hint!r}")
+    return replace(
+        shape,
+        text=shape.text or hint is str,
+        number=shape.number or hint is float,
+        integer=shape.integer or hint is int,
+        tolerance=shape.tolerance or hint is Tolerance,
+        mapping=shape.mapping or hint is JsonObject,
+    )
 
 
 def shape_of(hint: Any) -> Shape:
@@ -108,7 +107,6 @@ number=True, integer=False, tolerance=False, mapping=False)
     return _merge(Shape(), hint)
 
 
-@cache
 def fields_of(part: type) -> tuple[Field, ...]:
     """Return the fields of a part, in the file's order.
 
@@ -116,6 +114,11 @@ def fields_of(part: type) -> tuple[Field, ...]:
     >>> [field.key for field in fields_of(SpeedRange)]
     ['from', 'to']
     """
+    return _fields_of(part)
+
+
+@cache
+def _fields_of(part: type) -> tuple[Field, ...]:
     hints = get_type_hints(part, include_extras=True)
     return tuple(
         Field(

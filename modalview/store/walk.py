@@ -20,6 +20,8 @@ from modalview.units.quantities import RATIO, Quantity
 # Objects in `given` may nest, but not so deeply that writing them could fail.
 DEEPEST_GIVEN = 32
 LONGEST_SHOWN = 40
+# Plain numbers (orders, components of vectors) beyond this would overflow the simplest arithmetic.
+LARGEST = 1e100
 BLANK = Entry("", math.nan)
 
 _VALUE_KEYS = ("value", "tolerance", "source", "status", "by", "given")
@@ -30,61 +32,46 @@ def shown(node: Any) -> str:
     """Name a JSON value as found, for a message."""
     if isinstance(node, NotFinite):
         return f"{node.word}, which is not a number"
-    if node is None:
-        return "null; leave out a key that has no value"
-    if isinstance(node, bool):
-        return "true" if node else "false"
-    if isinstance(node, dict):
-        return "an object {...}"
-    if isinstance(node, list):
-        return "a list [...]"
     if isinstance(node, str):
         return f'the text "{node}"' if len(node) <= LONGEST_SHOWN else f'the text "{node[:LONGEST_SHOWN]}..."'
-    return f"the number {node}" if abs(node) < 1e300 else "a number beyond all measure"
+    if isinstance(node, dict | list):
+        return "an object {...}" if isinstance(node, dict) else "a list [...]"
+    if node is None or isinstance(node, bool):
+        return {None: "null; leave out a key that has no value", True: "true", False: "false"}[node]
+    return f"the number {node}" if abs(node) < LARGEST else "a number beyond all measure"
 
 
 def _wanted(shape: Shape, quantity: Quantity | None) -> str:
-    ways = []
-    if quantity:
-        ways.append(f'text with a unit, such as "{quantity.example}"')
-    if shape.tolerance:
-        ways.append('a tolerance: "10 %", {"minus", "plus"} or {"from", "to"}')
-    if shape.choice:
-        ways.append("one of " + ", ".join(f'"{one.value}"' for one in shape.choice))
-    if shape.integer:
-        ways.append("a whole number")
-    if shape.number:
-        ways.append("a number")
-    if shape.text:
-        ways.append("text")
-    if shape.items:
-        count = f" of {shape.length}" if shape.length else ""
-        ways.append(f"a list{count}")
-    if shape.value:
-        ways.append("an object with the key value")
-    if shape.records:
-        keys = [field.key for field in fields_of(shape.records[0]) if field.required]
-        ways.append(f"an object with {', '.join(keys)}" if keys else "an object")
-    if shape.mapping:
-        ways.append("an object")
-    return " or ".join(ways)
+    """Say in words what may stand in a field."""
+    example = quantity.example if quantity else ""
+    words = ", ".join(f'"{one.value}"' for one in shape.choice or ())
+    keys = [field.key for one in shape.records[:1] for field in fields_of(one) if field.required]
+    ways = (
+        (quantity is not None, f'text with a unit, such as "{example}"'),
+        (shape.tolerance, 'a tolerance: "10 %", {"minus", "plus"} or {"from", "to"}'),
+        (shape.choice is not None, f"one of {words}"),
+        (shape.integer, "a whole number"),
+        (shape.number, "a number"),
+        (shape.text, "text"),
+        (shape.items is not None, f"a list of {shape.length}" if shape.length else "a list"),
+        (shape.value is not None, "an object with the key value"),
+        (bool(shape.records), f"an object with {', '.join(keys)}" if keys else "an object"),
+        (shape.mapping, "an object"),
+    )
+    return " or ".join(way for possible, way in ways if possible)
 
 
 def blank(shape: Shape) -> Any:
     """Return what stands in for a value that could not be read: right in type, empty in meaning."""
-    if shape.value:
-        return Value(BLANK)
-    if shape.entry:
-        return BLANK
-    if shape.items:
-        return ()
+    if shape.quantity:
+        return Value(BLANK) if shape.value else BLANK
     if shape.records:
         needed = {field.name: blank(field.shape) for field in fields_of(shape.records[0]) if field.required}
         return shape.records[0](**needed)
     if shape.choice:
         return next(iter(shape.choice))
-    if shape.tolerance:
-        return Tolerance()
+    if shape.items or shape.tolerance:
+        return () if shape.items else Tolerance()
     return math.nan if shape.number else ""
 
 
@@ -177,7 +164,7 @@ class Walk:
     def _number(self, shape: Shape, node: float) -> Any:
         if shape.integer:
             return node if isinstance(node, int) else None
-        if shape.number and abs(node) < 1e300 and math.isfinite(node):
+        if shape.number and abs(node) < LARGEST:
             return node
         return None
 

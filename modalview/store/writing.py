@@ -24,10 +24,13 @@ def dump_model(model: Model) -> str:
       "motion": "single axis"
     }
     """
-    tree = {"format": FORMAT, "version": VERSION, **_record(model)}
-    if "motion" not in tree:  # a default in the program, but never left to guess in a file
-        head = {key: tree.pop(key) for key in ("format", "version", "title") if key in tree}
-        tree = {**head, "motion": model.motion.value, **tree}
+    parts = _record(model)
+    tree: dict[str, Any] = {"format": FORMAT, "version": VERSION}
+    if model.title:
+        tree["title"] = model.title
+    # A default in the program, but never left to guess in a file.
+    tree["motion"] = model.motion.value
+    tree.update((key, node) for key, node in parts.items() if key not in tree)
     return laid_out(tree)
 
 
@@ -44,14 +47,10 @@ def _record(part: Any) -> dict[str, Any]:
 
 
 def _node(item: Any) -> Any:
-    if isinstance(item, StrEnum):
-        return item.value
-    if isinstance(item, Entry):
-        return item.text
-    if isinstance(item, Value):
-        return _value(item)
-    if isinstance(item, Tolerance):
-        return _tolerance(item)
+    if isinstance(item, Value | Tolerance):
+        return _value(item) if isinstance(item, Value) else _tolerance(item)
+    if isinstance(item, Entry | StrEnum):
+        return item.text if isinstance(item, Entry) else item.value
     if isinstance(item, JsonObject):
         return _thawed(item)
     if isinstance(item, tuple):

@@ -1,0 +1,84 @@
+"""What a rule about one part must know of the rest of the model."""
+
+import math
+from collections.abc import Iterator
+from dataclasses import dataclass
+
+from modalview.model.parts import FREEDOMS, Body, End, Model, Motion, Point, Support
+
+# A rule's finding: the field it concerns, seen from its part, and what is wrong.
+Finding = tuple[str, str]
+Findings = Iterator[Finding]
+
+# Ends nearer than this share of their coordinates have no direction that could be trusted.
+COINCIDENT = 1e-9
+
+
+@dataclass(frozen=True, slots=True)
+class Context:
+    """Motion, bodies and supports of a model, by id."""
+
+    motion: Motion
+    bodies: dict[str, Body]
+    supports: dict[str, Support]
+
+    @classmethod
+    def of(cls, model: Model) -> "Context":
+        """Collect what the rules ask for."""
+        return cls(
+            model.motion,
+            {body.id: body for body in model.bodies},
+            {support.id: support for support in model.supports},
+        )
+
+    @property
+    def dimensions(self) -> int:
+        """How many numbers a point has: three in space, two elsewhere."""
+        return 3 if self.motion is Motion.SPACE else 2
+
+    @property
+    def freedoms(self) -> tuple[str, ...]:
+        """The directions a body can move in."""
+        return FREEDOMS[self.motion]
+
+    @property
+    def drawn_only(self) -> bool:
+        """True where positions do not matter to the numbers."""
+        return self.motion in (Motion.SINGLE_AXIS, Motion.SHAFT_TRAIN)
+
+    def place(self, end: End) -> tuple[float, ...] | None:
+        """Return where an end stands in m; None when it cannot be told."""
+        part = self.bodies.get(end.body or "") or self.supports.get(end.support or "")
+        if part is None or part.position is None or len(part.position) != self.dimensions:
+            return None
+        offset = end.offset
+        if offset is None:
+            return tuple(one.si for one in part.position)
+        if len(offset) != self.dimensions:
+            return None
+        return tuple(one.si + more.si for one, more in zip(part.position, offset, strict=True))
+
+    def line(self, start: End, stop: End) -> tuple[float, ...] | None:
+        """Return the vector between two ends; zero when they coincide, None when it cannot be told."""
+        here, there = self.place(start), self.place(stop)
+        if here is None or there is None:
+            return None
+        line = tuple(b - a for a, b in zip(here, there, strict=True))
+        scale = max(abs(number) for number in (*here, *there))
+        return line if math.hypot(*line) > COINCIDENT * scale else (0.0,) * len(line)
+
+
+def points(key: str, point: Point | None, context: Context, *, required: bool) -> Findings:
+    """Yield what is wrong with a position or an offset."""
+    if point is None:
+        if required:
+            yield (
+                key,
+                f"is missing; in {context.motion.value} it places the springs: give {_numbers(context)}",
+            )
+    elif len(point) != context.dimensions:
+        yield key, f"has {len(point)} numbers; in {context.motion.value} it needs {_numbers(context)}"
+
+
+def _numbers(context: Context) -> str:
+    return 'three, ["x", "y", "z"]' if context.dimensions == 3 else 'two, ["x", "y"]'
