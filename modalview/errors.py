@@ -7,7 +7,8 @@ KeepclearError
         FaultsError           a list of faults, each with its place
             FileFaultsError   faults of a model file
             ModelFaultsError  faults of a model that reads well but cannot be analysed
-        FileAccessError       a file cannot be read or written, or changed on disk
+        FileAccessError       a file cannot be read or written
+            FileChangedError  it changed on disk since it was opened; nothing was written
     NumericalError            a computation could not reach what was asked
         NotConvergedError     carries the partial result
     CancelledError            the person stopped it
@@ -69,7 +70,11 @@ class ModelFaultsError(FaultsError):
 
 
 class FileAccessError(InputError):
-    """A file cannot be read or written, or changed on disk since it was opened."""
+    """A file cannot be read or written."""
+
+
+class FileChangedError(FileAccessError):
+    """A file changed on disk since it was opened; nothing was written, so that the person can be asked."""
 
 
 class NumericalError(KeepclearError):

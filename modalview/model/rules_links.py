@@ -86,10 +86,7 @@ def _ends(given: Link, context: Context) -> Findings:
     if isinstance(given, Gear | RigidLink):
         for key, one in (("from", start), ("to", stop)):
             if one.support is not None:
-                yield (
-                    key,
-                    f"a {given.kind} joins two bodies; to hold a body still, list its free directions in its dof",
-                )
+                yield key, f"a {given.kind} joins two bodies; a body is held still by its dof"
 
 
 def _line_of_action(given: Spring | Damper, context: Context) -> Findings:
