@@ -1,0 +1,1 @@
+"""The solve: modes of a pencil with error bounds and evidence that none is missing."""
