@@ -6,7 +6,7 @@ Parts in a list are named by their id, other items by their number.
 from dataclasses import is_dataclass, replace
 from typing import Any
 
-from modalview.model.fields import Field, fields_of, quantity_in
+from modalview.model.fields import Field, Shape, fields_of, quantity_in
 from modalview.model.parts import Model
 from modalview.units.quantities import Quantity
 
@@ -68,26 +68,32 @@ def _put(whole: Any, address: Address, item: Any) -> Any:
     return replace(whole, **{field_named(type(whole), address[0]).name: inner})
 
 
+def shape_at(model: Model, address: Address) -> tuple[Shape, Quantity | None]:
+    """Return what may stand at an address, and in which quantity a value or entry is typed there.
+
+    An empty optional field has both too: they say what may be typed there.
+    """
+    whole: Any = model
+    shape, quantity = Shape(), None
+    for step in address:
+        if isinstance(whole, tuple):
+            shape = shape.items or Shape()
+            quantity = shape.quantity
+        else:
+            part: type = type(whole)
+            field = field_named(part, step)
+            shape, quantity = field.shape, field.shape.quantity
+            if quantity:
+                quantity = quantity_in(part, field.name, quantity, model.motion)
+        whole = _step(whole, step)
+    return shape, quantity
+
+
 def quantity_of(model: Model, address: Address) -> Quantity | None:
     """Return the quantity of the value or entry at an address, or None where none is held.
-
-    An empty optional field has a quantity too: it says what may be typed there.
 
     >>> from modalview.model.parts import Body
     >>> quantity_of(Model(bodies=(Body(id="rotor"),)), ("bodies", "rotor", "mass")).name
     'mass'
     """
-    whole: Any = model
-    declared: Quantity | None = None
-    items = None
-    for step in address:
-        if isinstance(whole, tuple):
-            declared = items.quantity if items else None
-        else:
-            part: type = type(whole)
-            field = field_named(part, step)
-            declared, items = field.shape.quantity, field.shape.items
-            if declared:
-                declared = quantity_in(part, field.name, declared, model.motion)
-        whole = _step(whole, step)
-    return declared
+    return shape_at(model, address)[1]

@@ -4,6 +4,7 @@ import hashlib
 import os
 import secrets
 import shutil
+from contextlib import suppress
 from dataclasses import dataclass
 from pathlib import Path
 from typing import BinaryIO
@@ -80,8 +81,8 @@ def save_model(model: Model, path: str | os.PathLike[str], *, known: FileStamp |
         The model breaks a rule.
     """
     data = _checked_bytes(model)
-    target = Path(os.path.realpath(path))
     try:
+        target = Path(os.path.realpath(path))
         _check_target(target, known)
         if target.exists():
             _replace(target.with_name(target.name + BACKUP_SUFFIX), target.read_bytes(), like=target)
@@ -128,7 +129,7 @@ def _replace(target: Path, data: bytes, *, like: Path | None) -> None:
             os.fsync(file.fileno())
         if like is not None:
             shutil.copymode(like, beside)
-        os.replace(beside, target)
+        beside.replace(target)
     finally:
         beside.unlink(missing_ok=True)
     _flush_folder(target.parent)
@@ -139,14 +140,18 @@ def _open_new(path: Path) -> BinaryIO:
 
 
 def _flush_folder(folder: Path) -> None:
-    """Bring the new name to the disk too; Windows does it by itself and cannot open a folder."""
+    """Bring the new name to the disk too, where folders can be flushed.
+
+    Windows does it by itself, and some network disks refuse: the file is in place either way.
+    """
     if os.name == "nt":
         return
-    handle = os.open(folder, os.O_RDONLY)
-    try:
-        os.fsync(handle)
-    finally:
-        os.close(handle)
+    with suppress(OSError):
+        handle = os.open(folder, os.O_RDONLY)
+        try:
+            os.fsync(handle)
+        finally:
+            os.close(handle)
 
 
 def _stamp(path: Path, data: bytes) -> FileStamp:
