@@ -3,10 +3,14 @@
 So a file reads like a table where it can, and a changed value changes one line.
 """
 
-import json
+from json import JSONEncoder
+from json.encoder import encode_basestring
 from typing import Any
 
 WIDTH = 100
+# Whole floats are written without a point up to here; beyond, digits would be invented.
+EXACT = 1e15
+_plain = JSONEncoder(ensure_ascii=False).encode
 
 
 def laid_out(tree: dict[str, Any]) -> str:
@@ -23,17 +27,10 @@ def laid_out(tree: dict[str, Any]) -> str:
     return _broken(tree, "") + "\n"
 
 
-def _number(number: float) -> str:
-    """Write 7.0 as 7: an order is typed that way."""
-    return json.dumps(
-        int(number) if isinstance(number, float) and number.is_integer() and abs(number) < 1e15 else number
-    )
-
-
 def _one_line(node: Any) -> str | None:
     """Return a node on one line, or None when it holds a list of parts, which never is."""
     if isinstance(node, dict):
-        items = [(json.dumps(key, ensure_ascii=False), _one_line(item)) for key, item in node.items()]
+        items = [(encode_basestring(key), _one_line(item)) for key, item in node.items()]
         if any(item is None for _, item in items):
             return None
         return "{" + ", ".join(f"{key}: {item}" for key, item in items) + "}"
@@ -42,9 +39,11 @@ def _one_line(node: Any) -> str | None:
             return None
         parts = [_one_line(item) for item in node]
         return None if None in parts else "[" + ", ".join(part or "" for part in parts) + "]"
-    if isinstance(node, float):
-        return _number(node)
-    return json.dumps(node, ensure_ascii=False)
+    if isinstance(node, str):
+        return encode_basestring(node)
+    if isinstance(node, float) and node.is_integer() and abs(node) < EXACT:
+        return str(int(node))  # an order 7.0 is typed 7
+    return _plain(node)
 
 
 def _laid(node: Any, indent: str, used: int) -> str:
@@ -60,7 +59,7 @@ def _broken(node: Any, indent: str) -> str:
     if isinstance(node, dict):
         lines = []
         for key, item in node.items():
-            start = f"{inner}{json.dumps(key, ensure_ascii=False)}: "
+            start = f"{inner}{encode_basestring(key)}: "
             lines.append(start + _laid(item, inner, len(start)))
         return "{\n" + ",\n".join(lines) + f"\n{indent}}}" if lines else "{}"
     lines = [inner + _laid(item, inner, len(inner)) for item in node]
