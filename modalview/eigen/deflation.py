@@ -88,7 +88,7 @@ def mass_orthonormal(pencil: Pencil, vectors: Array) -> Array:
     """Return the span of ``vectors`` (n, m), M-orthonormal; rows of massless coordinates follow along."""
     for _ in range(2):
         inertial = np.asarray(pencil.basis.T @ (pencil.M @ vectors))
-        triangle = np.linalg.qr(inertial, mode="r")
+        triangle: Array = np.linalg.qr(inertial)[1]
         vectors = la.solve_triangular(triangle.T, vectors.T, lower=True).T
     return vectors
 

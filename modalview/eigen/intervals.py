@@ -5,11 +5,13 @@ from dataclasses import dataclass
 import numpy as np
 import numpy.typing as npt
 
-from modalview.assembly.pencil import Pencil
-from modalview.eigen.rayleigh import Rayleigh, gamma
+from modalview.eigen.rayleigh import Energy, Rayleigh
 
 Array = npt.NDArray[np.float64]
 Groups = tuple[tuple[int, int], ...]
+
+# Shapes farther than this from orthonormal prove nothing about the number of eigenvalues near them.
+UNUSABLE = 0.5
 
 
 @dataclass(frozen=True, slots=True, eq=False)
@@ -31,12 +33,13 @@ class Intervals:
     separate: bool
 
 
-def enclose(pencil: Pencil, shapes: Array, found: Rayleigh, zeros: int) -> Intervals:
+def enclose(energy: Energy, shapes: Array, found: Rayleigh, zeros: int) -> Intervals:
     """Enclose every eigenvalue of the pencil, from Rayleigh quotients in ascending order.
 
     Parameters
     ----------
-    pencil : Pencil
+    energy : Energy
+        Of the pencil.
     shapes : array (n, m)
         M-orthonormal to rounding.
     found : Rayleigh
@@ -51,20 +54,16 @@ def enclose(pencil: Pencil, shapes: Array, found: Rayleigh, zeros: int) -> Inter
        1996, Linear Algebra Appl. 248). Runs are merged until no two intervals meet; as the number of
        shapes is the number of modes, each run then holds exactly its own.
     2. With the neighbours so enclosed, the quadratic bounds hold: T. Kato (1949), J. Phys. Soc. Japan 4,
-       334 and G. Temple (1928) for single modes; R. Mathias (1998), SIAM J. Matrix Anal. Appl. 19, 541
-       for runs.
+       334 and G. Temple (1928), Proc. R. Soc. A 119, 276 for single modes; R. Mathias (1998), SIAM J.
+       Matrix Anal. Appl. 19, 541 for runs.
     """
-    runs = _separate_runs(pencil, shapes, found, zeros)
-    size = found.quotient.size
-    lower, upper = np.empty(size), np.empty(size)
+    runs = _separate_runs(energy, shapes, found)
+    lower, upper = np.empty(found.quotient.size), np.empty(found.quotient.size)
     for index, run in enumerate(runs):
-        below = runs[index - 1].high if index else (0.0 if zeros else -np.inf)
+        below = runs[index - 1].high if index else -np.inf
         above = runs[index + 1].low if index + 1 < len(runs) else np.inf
-        if zeros and run.low < 0 < run.high:
-            below = above = np.nan  # the known zeros are inside: no gap to use
-        elif zeros and run.high < 0:
-            above = min(above, 0.0)
-            below = runs[index - 1].high if index else -np.inf
+        if zeros:
+            below, above = _beside_zero(run, below, above)
         where = slice(run.start, run.stop)
         lower[where], upper[where] = _tightened(found, run, below, above)
     separate = all(np.isfinite(run.radius) for run in runs)
@@ -80,21 +79,29 @@ class _Run:
     radius: float
     defect: float
 
+    @property
+    def size(self) -> int:
+        return self.stop - self.start
 
-def _separate_runs(pencil: Pencil, shapes: Array, found: Rayleigh, zeros: int) -> list[_Run]:
+
+def _separate_runs(energy: Energy, shapes: Array, found: Rayleigh) -> list[_Run]:
     runs = [_single(found, j) for j in range(found.quotient.size)]
     while True:
         merged: list[_Run] = []
-        changed = False
         for run in runs:
             if merged and run.low <= merged[-1].high:
                 merged[-1] = _joined(merged[-1], run)
-                changed = True
             else:
                 merged.append(run)
-        if not changed:
+        if len(merged) == len(runs):
             return runs
-        runs = [_measured(pencil, shapes, found, run) if run.stop - run.start > 1 else run for run in merged]
+        kept = set(runs)
+        runs = [run if run in kept else _measured(energy, shapes, found, run) for run in merged]
+
+
+def _single(found: Rayleigh, j: int) -> _Run:
+    theta, rho, error = (float(part[j]) for part in (found.quotient, found.residual, found.quotient_error))
+    return _Run(j, j + 1, theta - rho, theta + rho, rho, error)
 
 
 def _joined(first: _Run, second: _Run) -> _Run:
@@ -102,40 +109,39 @@ def _joined(first: _Run, second: _Run) -> _Run:
     return _Run(first.start, second.stop, low, high, np.inf, np.inf)
 
 
-def _single(found: Rayleigh, j: int) -> _Run:
-    theta, rho, error = found.quotient[j], found.residual[j], found.quotient_error[j]
-    return _Run(j, j + 1, theta - rho, theta + rho, rho, error)
-
-
-def _measured(pencil: Pencil, shapes: Array, found: Rayleigh, run: _Run) -> _Run:
+def _measured(energy: Energy, shapes: Array, found: Rayleigh, run: _Run) -> _Run:
+    """Fill in the radius and the defect of a joined run."""
     where = slice(run.start, run.stop)
-    theta = found.quotient[where]
-    gram, gram_error = _gram(pencil, shapes[:, where])
-    off = float(np.linalg.norm(gram - np.eye(len(gram)))) + gram_error
-    if off >= 0.5:
+    theta, block = found.quotient[where], np.ascontiguousarray(shapes[:, where])
+    gram = energy.gram_defect(block)
+    if gram >= UNUSABLE:
         return _Run(run.start, run.stop, -np.inf, np.inf, np.inf, np.inf)
-    norms = np.linalg.norm(found.residual[where])
-    radius = float(norms / (1 - off))
-    low, high = float(theta.min()) - radius, float(theta.max()) + radius
-    return _Run(run.start, run.stop, low, high, radius, off)
+    radius = float(np.linalg.norm(found.residual[where])) / (1 - gram)
+    defect = energy.ritz_defect(block, theta, gram)
+    return _Run(run.start, run.stop, float(theta[0]) - radius, float(theta[-1]) + radius, radius, defect)
 
 
-def _gram(pencil: Pencil, shapes: Array) -> tuple[Array, float]:
-    weighted = pencil.M @ shapes
-    gram = shapes.T @ weighted
-    size = np.abs(shapes).T @ (abs(pencil.M) @ np.abs(shapes))
-    return gram, gamma(shapes.shape[0] + 2) * float(np.linalg.norm(size))
+def _beside_zero(run: _Run, below: float, above: float) -> tuple[float, float]:
+    """Let the known zero eigenvalues end the gap of their neighbours."""
+    if run.low > 0:
+        return max(below, 0.0), above
+    if run.high < 0:
+        return below, min(above, 0.0)
+    return run.high, run.low  # zero is inside: no gap
 
 
 def _tightened(found: Rayleigh, run: _Run, below: float, above: float) -> tuple[Array, Array]:
-    where = slice(run.start, run.stop)
-    theta = found.quotient[where]
+    """Intersect the linear interval with the quadratic one, given the nearest other eigenvalues."""
+    theta = found.quotient[run.start : run.stop]
     lower, upper = theta - run.radius, theta + run.radius
-    if run.stop - run.start > 1:
-        return lower, upper
-    error, square = run.defect, run.radius**2
-    if above > theta[0] + error:
-        lower = np.maximum(lower, theta - error - square / (above - theta - error))
-    if below < theta[0] - error:
-        upper = np.minimum(upper, theta + error + square / (theta - error - below))
+    square = run.radius**2
+    # Beside a run the rest of the spectrum is known only to within the run's own radius.
+    blur = run.defect + (run.radius if run.size > 1 else 0.0)
+    right, left = above - theta[-1] - blur, theta[0] - below - blur
+    if run.size > 1:
+        right = left = min(right, left)
+    if right > 0:
+        lower = np.maximum(lower, theta - run.defect - square / right)
+    if left > 0:
+        upper = np.minimum(upper, theta + run.defect + square / left)
     return lower, upper

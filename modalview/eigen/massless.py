@@ -1,4 +1,6 @@
-"""G of a model with massless coordinates, by projection instead of elimination."""
+"""Massless coordinates: G by projection instead of elimination, and what a misplacement can cost."""
+
+from dataclasses import dataclass
 
 import numpy as np
 import numpy.typing as npt
@@ -8,7 +10,10 @@ from scipy.linalg import lapack
 
 from modalview.assembly.massroot import mass_root_inverse
 from modalview.assembly.pencil import Pencil
+from modalview.eigen.sums import column_sums
 from modalview.errors import NumericalError
+from modalview.factor.held import held_margin
+from modalview.factor.rounding import UNIT
 
 Array = npt.NDArray[np.float64]
 
@@ -39,3 +44,41 @@ def dense_factor(pencil: Pencil) -> Array:
     if fault:
         raise NumericalError(f"Projection of the massless coordinates failed with code {fault}.")
     return np.asarray(turned)[free.shape[1] :]
+
+
+@dataclass(frozen=True, slots=True, eq=False)
+class MasslessFloor:
+    """Lower bound of the stiffness of massless coordinates against a misplacement.
+
+    A shape whose massless coordinates are off by d has d.T K00 d too much energy; d is known only
+    through the force that is left on them.
+
+    Parameters
+    ----------
+    where : array (m,)
+        The massless coordinates.
+    scale : array (m,)
+        1/sqrt of the diagonal of K00.
+    least : float
+        Lowest eigenvalue of K00 so scaled.
+    """
+
+    where: npt.NDArray[np.intp]
+    scale: Array
+    least: float
+
+    def surplus_energy(self, pull: Array, rounding: Array) -> Array:
+        """Bound the surplus (m,) from the forces (n, m) on the coordinates and their rounding."""
+        left = (np.abs(pull[self.where]) + rounding[self.where]) * self.scale[:, None]
+        surplus: Array = column_sums(left**2) / self.least
+        return surplus
+
+
+def massless_floor(pencil: Pencil) -> MasslessFloor | None:
+    """Return the floor, or None where every coordinate has inertia."""
+    where = np.flatnonzero(pencil.massless)
+    if where.size == 0:
+        return None
+    scale = 1 / np.sqrt(pencil.K.diagonal()[where])
+    # Held, but by how much is not proven: elimination went through, so its condition is below 1/u.
+    return MasslessFloor(where, scale, max(held_margin(pencil.K, pencil.massless), UNIT))

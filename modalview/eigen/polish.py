@@ -7,8 +7,9 @@ import scipy.sparse as sp
 Array = npt.NDArray[np.float64]
 
 # Eigenvalues nearer than this many units of rounding of the largest are mixed in the vectors of an
-# eigenvalue solve; they are rotated together.
-MIXED = 1e4
+# eigenvalue solve and rotated together. What is mixed across 1e10 units, 1e-10 of a vector, counts
+# squared.
+MIXED = 1e10
 
 
 def ritz(factor: sp.csr_array, values: Array, vectors: Array) -> tuple[Array, Array]:

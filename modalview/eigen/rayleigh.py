@@ -1,27 +1,24 @@
 """Rayleigh quotients and residuals of given shapes, with a bound of every rounding error in them."""
 
-from collections.abc import Iterator
 from dataclasses import dataclass
+from typing import Self
 
 import numpy as np
 import numpy.typing as npt
 import scipy.sparse as sp
-from scipy.sparse.linalg import LinearOperator, onenormest, splu
 
 from modalview.assembly.pencil import Pencil
+from modalview.eigen.massless import MasslessFloor, massless_floor
+from modalview.eigen.sums import column_sums, summing
+from modalview.errors import NumericalError
+from modalview.factor.rounding import UNIT, gamma
 
 Array = npt.NDArray[np.float64]
 
-UNIT = float(np.finfo(float).eps) / 2
 # Shapes are treated this many at a time, so that stretches of all terms need little memory.
 CHUNK = 64
-# numpy sums runs of 128 with eight accumulators, then pairwise: at most 24 additions in a row and one
-# more per doubling, whatever the length.
-RUN = 26
 # Entries of the inverse mass root carry an error far below this; the residual is rounding already.
 ROOT_SLACK = 1e-6
-# A matrix at least this large is not decomposed only to bound its condition.
-LARGE_INNER = 1500
 
 
 @dataclass(frozen=True, slots=True, eq=False)
@@ -43,79 +40,29 @@ class Rayleigh:
     residual: Array
 
 
-def gamma(operations: int) -> float:
-    """Bound of the relative error of that many roundings in a row.
+@dataclass(frozen=True, slots=True, eq=False)
+class Forces:
+    """Elastic forces and energies of m shapes, with bounds of their rounding.
 
-    N. J. Higham (2002), Accuracy and Stability of Numerical Algorithms, section 3.1.
+    Parameters
+    ----------
+    pull, size, unsure : array (n, m)
+        K x; |K| |x| in the form it was summed; what an error of the stretches adds to the rounding.
+    energy, energy_error : array (m,)
+        x.T K x.
     """
-    return operations * UNIT / (1 - operations * UNIT)
 
-
-def summing(length: int) -> int:
-    """Roundings in a row when numpy sums a contiguous run of this length."""
-    return RUN + max(0, int(np.ceil(np.log2(max(length, 1) / 128))))
-
-
-def rayleigh(pencil: Pencil, shapes: Array) -> Rayleigh:
-    """Evaluate shapes (n, m) against the pencil, from its terms where it has them.
-
-    From the terms the quotient is a sum of squares over a sum of squares: no cancellation, relative
-    error near u even where the stiffness spans fourteen decades. Matrices of others are taken as exact.
-    """
-    energy = StretchEnergy.of(pencil) if pencil.rows is not None else MatrixEnergy.of(pencil)
-    floor = massless_floor(pencil)
-    parts = [energy.evaluate(chunk, floor) for chunk in _chunks(shapes)]
-    if not parts:
-        return Rayleigh(np.zeros(0), np.zeros(0), np.zeros(0))
-    return Rayleigh(
-        np.concatenate([part.quotient for part in parts]),
-        np.concatenate([part.quotient_error for part in parts]),
-        np.concatenate([part.residual for part in parts]),
-    )
-
-
-def _chunks(shapes: Array) -> Iterator[Array]:
-    for start in range(0, shapes.shape[1], CHUNK):
-        yield np.ascontiguousarray(shapes[:, start : start + CHUNK])
+    pull: Array
+    size: Array
+    unsure: Array
+    energy: Array
+    energy_error: Array
 
 
 @dataclass(frozen=True, slots=True, eq=False)
-class Inertia:
-    """M and the inverse mass root with their roundings."""
+class Stretching:
+    """K = rows.T diag(k) rows as its terms."""
 
-    pencil: Pencil
-    mass: sp.csr_array
-    absolute_mass: sp.csr_array
-    root: sp.csr_array
-    absolute_root: sp.csr_array
-    degree: int
-
-    @classmethod
-    def of(cls, pencil: Pencil) -> "Inertia":
-        mass = sp.csr_array(pencil.M)
-        root = sp.csr_array(pencil.basis.T)
-        return cls(pencil, mass, abs(mass), root, abs(root), _degree(mass))
-
-    def norm_squared(self, shapes: Array) -> tuple[Array, Array]:
-        """x.T M x (m,) and the bound of its absolute rounding error."""
-        n = shapes.shape[0]
-        value = _sum(shapes * (self.mass @ shapes))
-        size = _sum(np.abs(shapes) * (self.absolute_mass @ np.abs(shapes)))
-        return value, gamma(summing(n) + self.degree + 2) * size
-
-    def residual(self, force: Array, rounding: Array, norm: Array) -> Array:
-        """Bound of ||W.T r|| / ||x||_M from the computed r and the bound of its rounding."""
-        inner = np.sqrt(_sum((self.root @ force) ** 2))
-        outer = np.sqrt(_sum((self.absolute_root @ rounding) ** 2))
-        total: Array = (inner + outer) * (1 + ROOT_SLACK) / norm
-        return total
-
-
-@dataclass(frozen=True, slots=True, eq=False)
-class StretchEnergy:
-    """Energies and forces from the terms K = rows.T diag(k) rows."""
-
-    inertia: Inertia
     rows: sp.csr_array
     absolute_rows: sp.csr_array
     turned: sp.csr_array
@@ -125,127 +72,133 @@ class StretchEnergy:
     degree: int
 
     @classmethod
-    def of(cls, pencil: Pencil) -> "StretchEnergy":
-        assert pencil.rows is not None  # noqa: S101 - chosen by the caller
-        assert pencil.stiffness is not None  # noqa: S101 - same
+    def of(cls, pencil: Pencil) -> Self:
+        """Prepare the terms of a pencil that has them."""
+        if pencil.rows is None or pencil.stiffness is None:
+            raise NumericalError("This pencil was given as matrices and has no terms.")
         rows = sp.csr_array(pencil.rows)
         turned = sp.csr_array(rows.T)
-        return cls(
-            Inertia.of(pencil),
-            rows,
-            abs(rows),
-            turned,
-            abs(turned),
-            pencil.stiffness[:, None],
-            _degree(rows),
-            _degree(turned),
-        )
+        stiffness = pencil.stiffness[:, None]
+        return cls(rows, abs(rows), turned, abs(turned), stiffness, _degree(rows), _degree(turned))
 
-    def stretches(self, shapes: Array) -> tuple[Array, Array]:
-        """Stretch of every term (t, m) and the bound of its rounding."""
-        return self.rows @ shapes, gamma(self.width + 1) * (self.absolute_rows @ np.abs(shapes))
-
-    def evaluate(self, shapes: Array, floor: "MasslessFloor | None") -> Rayleigh:
-        """See `rayleigh`."""
-        stretch, unsure = self.stretches(shapes)
+    def forces(self, shapes: Array) -> Forces:
+        """Sum over the terms."""
+        stretch, off = self._stretch(shapes)
         weight = np.abs(self.stiffness)
-        energy = _sum(self.stiffness * stretch**2)
-        size = _sum(weight * stretch**2)
-        energy_error = gamma(summing(len(stretch)) + 4) * size
-        energy_error += _sum(weight * (2 * np.abs(stretch) + unsure) * unsure)
-        norm2, norm2_error = self.inertia.norm_squared(shapes)
-        quotient = energy / norm2
         pull = self.turned @ (self.stiffness * stretch)
-        force = pull - quotient * (self.inertia.mass @ shapes)
-        inertial = np.abs(quotient) * (self.inertia.absolute_mass @ np.abs(shapes))
-        elastic = self.absolute_turned @ (weight * np.abs(stretch))
-        rounding = gamma(max(self.degree, self.inertia.degree) + 6) * (elastic + inertial)
-        rounding += self.absolute_turned @ (weight * unsure)
-        error = _quotient_error(quotient, energy_error, norm2, norm2_error)
-        if floor is not None:
-            error += floor.energy(pull, rounding) / norm2
-        residual = self.inertia.residual(force, rounding, np.sqrt(norm2 - norm2_error))
-        return Rayleigh(quotient, error, residual)
+        size = self.absolute_turned @ (weight * np.abs(stretch))
+        unsure = self.absolute_turned @ (weight * off)
+        energy = column_sums(self.stiffness * stretch**2)
+        error = gamma(summing(len(stretch)) + 4) * column_sums(weight * stretch**2)
+        error += column_sums(weight * (2 * np.abs(stretch) + off) * off)
+        return Forces(pull, size, unsure, energy, error)
+
+    def cross_energy(self, shapes: Array) -> tuple[Array, float]:
+        """Return X.T K X (g, g) and a bound of its rounding in the Frobenius norm."""
+        stretch, off = self._stretch(shapes)
+        force = self.stiffness * stretch
+        heavy = np.abs(self.stiffness) * (np.abs(stretch) + off)
+        cross = np.stack([column_sums(stretch * one[:, None]) for one in force.T])
+        size = np.stack([column_sums(np.abs(stretch) * one[:, None]) for one in heavy.T])
+        spread = np.stack([column_sums(off * one[:, None]) for one in heavy.T])
+        rounding = gamma(summing(len(stretch)) + 4) * size + spread + spread.T
+        return cross, float(np.linalg.norm(rounding))
+
+    def _stretch(self, shapes: Array) -> tuple[Array, Array]:
+        return self.rows @ shapes, gamma(self.width + 1) * (self.absolute_rows @ np.abs(shapes))
 
 
 @dataclass(frozen=True, slots=True, eq=False)
-class MatrixEnergy:
-    """Energies and forces from the entries of K, taken as exact."""
+class Entries:
+    """A symmetric matrix by its entries, taken as exact."""
 
-    inertia: Inertia
-    stiffness: sp.csr_array
+    matrix: sp.csr_array
     absolute: sp.csr_array
     degree: int
 
     @classmethod
-    def of(cls, pencil: Pencil) -> "MatrixEnergy":
-        stiffness = sp.csr_array(pencil.K)
-        return cls(Inertia.of(pencil), stiffness, abs(stiffness), _degree(stiffness))
+    def of(cls, matrix: sp.csc_array) -> Self:
+        """Prepare a matrix."""
+        rows = sp.csr_array(matrix)
+        return cls(rows, abs(rows), _degree(rows))
 
-    def evaluate(self, shapes: Array, floor: "MasslessFloor | None") -> Rayleigh:
-        """See `rayleigh`."""
-        pull = self.stiffness @ shapes
-        elastic = self.absolute @ np.abs(shapes)
-        energy = _sum(shapes * pull)
-        energy_error = gamma(summing(len(shapes)) + self.degree + 2) * _sum(np.abs(shapes) * elastic)
-        norm2, norm2_error = self.inertia.norm_squared(shapes)
-        quotient = energy / norm2
-        force = pull - quotient * (self.inertia.mass @ shapes)
-        inertial = np.abs(quotient) * (self.inertia.absolute_mass @ np.abs(shapes))
-        rounding = gamma(max(self.degree, self.inertia.degree) + 6) * (elastic + inertial)
-        error = _quotient_error(quotient, energy_error, norm2, norm2_error)
-        if floor is not None:
-            error += floor.energy(pull, rounding) / norm2
-        residual = self.inertia.residual(force, rounding, np.sqrt(norm2 - norm2_error))
-        return Rayleigh(quotient, error, residual)
+    def forces(self, shapes: Array) -> Forces:
+        """Multiply the matrix."""
+        pull, size = self.matrix @ shapes, self.absolute @ np.abs(shapes)
+        energy = column_sums(shapes * pull)
+        error = gamma(summing(len(shapes)) + self.degree + 2) * column_sums(np.abs(shapes) * size)
+        return Forces(pull, size, np.zeros_like(pull), energy, error)
+
+    def cross_energy(self, shapes: Array) -> tuple[Array, float]:
+        """Return X.T A X (g, g) and a bound of its rounding in the Frobenius norm."""
+        pull, size = self.matrix @ shapes, self.absolute @ np.abs(shapes)
+        cross = np.stack([column_sums(pull * one[:, None]) for one in shapes.T])
+        absolute = np.stack([column_sums(size * one[:, None]) for one in np.abs(shapes).T])
+        rounding = gamma(summing(len(shapes)) + self.degree + 2) * absolute
+        return cross, float(np.linalg.norm(rounding))
 
 
 @dataclass(frozen=True, slots=True, eq=False)
-class MasslessFloor:
-    """Lower bound of the stiffness of massless coordinates against a misplacement.
+class Energy:
+    """Elastic and inertial energy of a pencil's shapes."""
 
-    A shape whose massless coordinates are off by d has d.T K00 d too much energy; d is known only
-    through the force that is left on them.
-    """
+    elastic: Stretching | Entries
+    inertial: Entries
+    root: sp.csr_array
+    absolute_root: sp.csr_array
+    floor: MasslessFloor | None
 
-    where: Array
-    scale: Array
-    least: float
+    @classmethod
+    def of(cls, pencil: Pencil) -> Self:
+        """Choose how shapes are evaluated: from the terms where the pencil has them.
 
-    def energy(self, pull: Array, rounding: Array) -> Array:
-        """Bound of the surplus energy (m,) from the forces left on the massless coordinates."""
-        left = (np.abs(pull[self.where]) + rounding[self.where]) * self.scale[:, None]
-        surplus: Array = _sum(left**2) / self.least
-        return surplus
+        From the terms a quotient is a sum of squares over a sum of squares: no cancellation, relative
+        error near u even where the stiffness spans fourteen decades.
+        """
+        elastic = Entries.of(pencil.K) if pencil.rows is None else Stretching.of(pencil)
+        root = sp.csr_array(pencil.basis.T)
+        return cls(elastic, Entries.of(pencil.M), root, abs(root), massless_floor(pencil))
 
+    def rayleigh(self, shapes: Array) -> Rayleigh:
+        """Evaluate shapes (n, m) one by one."""
+        starts = range(0, max(shapes.shape[1], 1), CHUNK)
+        parts = [self._chunk(np.ascontiguousarray(shapes[:, start : start + CHUNK])) for start in starts]
+        quotient = np.concatenate([part.quotient for part in parts])
+        error = np.concatenate([part.quotient_error for part in parts])
+        return Rayleigh(quotient, error, np.concatenate([part.residual for part in parts]))
 
-def massless_floor(pencil: Pencil) -> MasslessFloor | None:
-    """Return the floor, or None where every coordinate has inertia."""
-    where = np.flatnonzero(pencil.massless)
-    if where.size == 0:
-        return None
-    inner = sp.csc_array(pencil.K[where][:, where])
-    scale = 1 / np.sqrt(inner.diagonal())
-    scaled = sp.csc_array(sp.diags_array(scale) @ inner @ sp.diags_array(scale))
-    if where.size < LARGE_INNER:
-        least = float(np.linalg.eigvalsh(scaled.toarray())[0])
-    else:
-        solve = splu(scaled).solve
-        inverse = LinearOperator(scaled.shape, matvec=solve, rmatvec=solve, dtype=float)
-        least = 1 / (3 * float(onenormest(inverse)))  # the estimate is rarely off by more than 3
-    return MasslessFloor(where, scale, max(least, UNIT))
+    def _chunk(self, shapes: Array) -> Rayleigh:
+        forces, inertia = self.elastic.forces(shapes), self.inertial.forces(shapes)
+        least = inertia.energy - inertia.energy_error
+        quotient = forces.energy / inertia.energy
+        residual = forces.pull - quotient * inertia.pull
+        degree = max(self.elastic.degree, self.inertial.degree)
+        rounding = gamma(degree + 6) * (forces.size + np.abs(quotient) * inertia.size) + forces.unsure
+        error = forces.energy_error + np.abs(quotient) * (inertia.energy_error + 2 * UNIT * inertia.energy)
+        if self.floor is not None:
+            error = error + self.floor.surplus_energy(forces.pull, rounding)
+        inner = np.sqrt(column_sums((self.root @ residual) ** 2))
+        outer = np.sqrt(column_sums((self.absolute_root @ rounding) ** 2))
+        bound = (inner + outer) * (1 + ROOT_SLACK) / np.sqrt(least)
+        return Rayleigh(quotient, error / least, bound)
 
+    def gram_defect(self, shapes: Array) -> float:
+        """Bound of ||X.T M X - I|| of shapes (n, g)."""
+        gram, rounding = self.inertial.cross_energy(shapes)
+        return float(np.linalg.norm(gram - np.eye(len(gram)))) + rounding
 
-def _quotient_error(quotient: Array, energy_error: Array, norm2: Array, norm2_error: Array) -> Array:
-    least = norm2 - norm2_error
-    error: Array = (energy_error + np.abs(quotient) * (norm2_error + 2 * UNIT * norm2)) / least
-    return error
-
-
-def _sum(entries: Array) -> Array:
-    """Sum over rows (n, m) -> (m,), along contiguous runs so that numpy sums pairwise."""
-    total: Array = np.ascontiguousarray(entries.T).sum(axis=1)
-    return total
+    def ritz_defect(self, shapes: Array, quotients: Array, gram_defect: float) -> float:
+        """Bound of the distance between Ritz values of the span of X (n, g) and its quotients."""
+        cross, rounding = self.elastic.cross_energy(shapes)
+        off = float(np.linalg.norm(cross - np.diag(quotients))) + rounding
+        size = float(np.abs(quotients).max()) + off
+        if self.floor is not None:
+            pull = self.elastic.forces(shapes)
+            left = self.floor.surplus_energy(
+                pull.pull, gamma(self.elastic.degree + 6) * pull.size + pull.unsure
+            )
+            off += float(np.sum(left))
+        return off + size * gram_defect * (1 + 2 * gram_defect)
 
 
 def _degree(matrix: sp.csr_array) -> int:

@@ -34,7 +34,7 @@ def eigenvalues(standard: Array) -> Array:
     if size < 2:
         return standard.diagonal().copy()
     if size >= SMALL:
-        return np.linalg.eigvalsh(standard)
+        return np.asarray(np.linalg.eigvalsh(standard), dtype=float)
     _, diagonal, beside, _, fault = lapack.dsytrd(standard, lower=1, lwork=_tridiagonal_work(size))
     if fault == 0:
         values, fault = lapack.dsterf(diagonal, beside)
