@@ -1,0 +1,116 @@
+"""What stands on every sheet: grid, axes and title block."""
+
+from dataclasses import dataclass
+
+import numpy as np
+
+from modalview.drawing.captions import shortened
+from modalview.drawing.primitives import Anchor, Box, Drawing, Floats, Item, Lines, Role, Size, Text
+from modalview.drawing.symbols import arrow
+from modalview.drawing.textsize import text_width
+from modalview.drawing.view import projection
+from modalview.model.parts import FREEDOMS, Model, Motion
+
+GRID_STEP = 24.0
+MARGIN = 12.0
+
+
+@dataclass(frozen=True, slots=True)
+class TitleLines:
+    """What the title block says."""
+
+    title: str
+    revision: str
+    motion: str
+    checked: str
+
+
+def title_lines(model: Model, *, checked: str = "not yet", freedoms: int | None = None) -> TitleLines:
+    """Return the title block's texts.
+
+    Parameters
+    ----------
+    model : Model
+    checked : str
+        The verdict in a few words.
+    freedoms : int or None
+        Number of independent coordinates; None counts those of the bodies.
+    """
+    if freedoms is None:
+        whole = FREEDOMS[model.motion]
+        freedoms = sum(len(whole if body.dof is None else body.dof) for body in model.bodies)
+    block = model.title_block
+    words = [block.revision, block.date] if block is not None else []
+    revision = " ".join(word for word in words if word) or "none"
+    return TitleLines(model.title or "untitled", revision, f"{model.motion} · {freedoms} DOF", checked)
+
+
+def title_size(text_scale: float) -> tuple[float, float]:
+    """Return width and height of the title block in pixels."""
+    return 300.0 * text_scale, 68.0 * text_scale
+
+
+def title_block(lines: TitleLines, sheet_width: float, text_scale: float) -> tuple[Item, ...]:
+    """Return the title block at the top right of a sheet, as wide as its longest texts, two by two."""
+    width, height = title_size(text_scale)
+    width = min(width, sheet_width - 2 * MARGIN)
+    left, top = sheet_width - MARGIN - width, MARGIN
+    split, middle = left + 0.6 * width, top + height / 2
+    cross = np.array([[left, middle, left + width, middle], [split, top, split, top + height]])
+    items: list[Item] = [
+        Box(left, top, width, height, 0.0, Role.INK, Role.PAPER, 1.2),
+        Lines(cross, Role.INK, 1.0),
+    ]
+    cells = (
+        ("title", lines.title, left, top, 0.6 * width),
+        ("revision", lines.revision, split, top, 0.4 * width),
+        ("motion", lines.motion, left, middle, 0.6 * width),
+        ("checked", lines.checked, split, middle, 0.4 * width),
+    )
+    for name, text, x, y, room in cells:
+        inner = room - 14.0
+        items += [
+            Text(x + 8, y + 9.0 * text_scale, name, Role.MUTED, Size.SMALL),
+            Text(x + 8, y + 24.0 * text_scale, shortened(text, inner, text_scale), Role.INK),
+        ]
+    return tuple(items)
+
+
+def grid(width: float, height: float) -> Lines:
+    """Return the faint squares of the paper."""
+    x = np.arange(GRID_STEP, width, GRID_STEP)
+    y = np.arange(GRID_STEP, height, GRID_STEP)
+    upright = np.stack([x, 0 * x, x, 0 * x + height], axis=1)
+    level = np.stack([0 * y, y, 0 * y + width, y], axis=1)
+    return Lines(np.vstack([upright, level]), Role.GRID, 1.0)
+
+
+def axes(motion: Motion, text_scale: float) -> tuple[tuple[Item, ...], Floats]:
+    """Return the arrows of the model's axes at the top left, and the rectangle (1, 4) they take."""
+    length = 34.0
+    shown = {
+        Motion.SINGLE_AXIS: ("y",),
+        Motion.SHAFT_TRAIN: ("x",),
+        Motion.PLANE: ("x", "y"),
+        Motion.SPACE: ("x", "y", "z"),
+    }[motion]
+    steps = projection(motion)[:, ["xyz".index(name) for name in shown]].T * np.array([length, -length])
+    low = np.minimum(steps.min(axis=0), 0.0)
+    origin = np.array([24.0, 22.0 * text_scale]) - low
+    starts = np.tile(origin, (len(steps), 1))
+    items: list[Item] = [Lines(arrow(starts, steps), Role.INK, 1.3)]
+    for name, step in zip(shown, steps, strict=True):
+        x, y = origin + step * (1 + 9.0 * text_scale / max(float(np.hypot(*step)), 1.0))
+        items.append(Text(float(x), float(y), name, Role.INK, Size.SMALL, Anchor.MIDDLE))
+    if motion is Motion.SHAFT_TRAIN:
+        x = float(origin[0] + length + 22 * text_scale)
+        items.append(Text(x, float(origin[1]), "rotation about the shafts", Role.MUTED, Size.SMALL))
+    high = origin + np.maximum(steps.max(axis=0), 0.0) + 20.0 * text_scale
+    if motion is Motion.SHAFT_TRAIN:
+        high[0] += text_width("rotation about the shafts", Size.SMALL, text_scale=text_scale)
+    return tuple(items), np.array([[0.0, 0.0, *high]])
+
+
+def sheet_of(items: tuple[Item, ...], width: float, height: float, text_scale: float) -> Drawing:
+    """Return items as a drawing with the sheet's bounds."""
+    return Drawing(items, (0.0, 0.0, width, height), text_scale)

@@ -1,0 +1,323 @@
+"""The model on the sheet as arrays of points, each fixed to a body, so that motion is one product."""
+
+from dataclasses import dataclass
+
+import numpy as np
+
+from modalview.drawing.layout import GROUND, Layout, layout
+from modalview.drawing.linkends import LinkEnds, link_ends
+from modalview.drawing.outline import Outlines, faces, outlines
+from modalview.drawing.primitives import Floats, Text
+from modalview.drawing.symbols import Symbol
+from modalview.drawing.view import View, fitted, projection
+from modalview.model.parts import Gear, Model, Motion
+
+Indices = np.ndarray[tuple[int, ...], np.dtype[np.int_]]
+
+LARGEST_STEP = (270.0, 175.0)  # pixels between neighbours of a model whose distances carry no meaning
+TWIST = 30.0  # pixels of the largest rotation beside a shaft
+ROUNDS = 3  # of fitting: sizes follow the scale, the scale follows the sizes
+
+
+@dataclass(frozen=True, slots=True, eq=False)
+class Points:
+    """Points of the sheet and the bodies they move with.
+
+    Parameters
+    ----------
+    rest : array (points, 2)
+        Pixels.
+    arms : array (points, 3)
+        From the body's centre of gravity, world.
+    bodies : array (points,) of int
+        GROUND for points that stand still.
+    """
+
+    rest: Floats
+    arms: Floats
+    bodies: Indices
+
+
+@dataclass(frozen=True, slots=True, eq=False)
+class LinkGroup:
+    """Links of one symbol; ``ends`` (n, 2) are indices of points."""
+
+    symbol: Symbol
+    ends: Indices
+    on_top: bool
+
+
+@dataclass(frozen=True, slots=True, eq=False)
+class Train:
+    """What shows rotation in a shaft train, where the discs are seen from the side.
+
+    Parameters
+    ----------
+    axes : array (n, 4)
+        Centre lines of the shafts, pixels.
+    pairs : array (n, 2) of int
+        Bodies joined by a shaft: their twist is joined by a line.
+    dials : array (bodies, 2)
+        Centres of the end views, pixels.
+    dial_radius : float
+    """
+
+    axes: Floats
+    pairs: Indices
+    dials: Floats
+    dial_radius: float
+
+
+@dataclass(frozen=True, slots=True, eq=False)
+class SheetGeometry:
+    """Everything about a model's sheet that does not change while it moves.
+
+    Parameters
+    ----------
+    model : Model
+    width, height, text_scale : float
+        Sheet in pixels, and times the size of texts.
+    grow : float
+        Times the sizes of symbols; below 1 in a small picture.
+    view : View
+    points : Points
+    faces : tuple of array (n, corners) of int
+        Indices of points, in the order of painting.
+    links : tuple of LinkGroup
+    centres : array (bodies,) of int
+        Points of the centres of gravity.
+    boxes : array (bodies, 4)
+        x1, y1, x2, y2 of every body at rest, pixels.
+    fronts : array (bodies, 4)
+        The same of the face that carries the name.
+    link_ends : array (links, 2, 2)
+        Pixels, in the order of the model.
+    train : Train or None
+        In a shaft train.
+    reach : float
+        Pixels of the largest motion at amplitude 1.
+    labels, body_labels : tuple of Text, tuple of (body, Text)
+        Laid out texts; those of bodies move with them.
+    arrows : array (n, 4)
+        Excitations, pixels.
+    unlabelled : tuple of str
+        Ids of parts whose label found no room.
+    """
+
+    model: Model
+    width: float
+    height: float
+    text_scale: float
+    grow: float
+    view: View
+    points: Points
+    faces: tuple[Indices, ...]
+    links: tuple[LinkGroup, ...]
+    centres: Indices
+    boxes: Floats
+    fronts: Floats
+    link_ends: Floats
+    link_bodies: Indices
+    train: Train | None
+    reach: float
+    labels: tuple[Text, ...] = ()
+    body_labels: tuple[tuple[int, Text], ...] = ()
+    arrows: Floats | None = None
+    unlabelled: tuple[str, ...] = ()
+
+
+class _Collector:
+    """Gathers points and hands out their indices."""
+
+    def __init__(self) -> None:
+        self.rest: list[Floats] = []
+        self.arms: list[Floats] = []
+        self.bodies: list[Indices] = []
+        self.count = 0
+
+    def add(self, rest: Floats, arms: Floats, bodies: Indices) -> Indices:
+        first = self.count
+        self.rest.append(rest.reshape(-1, 2))
+        self.arms.append(arms.reshape(-1, 3))
+        self.bodies.append(np.asarray(bodies, dtype=int).reshape(-1))
+        self.count += len(self.bodies[-1])
+        return np.arange(first, self.count)
+
+    def points(self) -> Points:
+        return Points(np.concatenate(self.rest), np.concatenate(self.arms), np.concatenate(self.bodies))
+
+
+def bare_geometry(
+    model: Model,
+    size: tuple[float, float],
+    area: tuple[float, float, float, float],
+    view: View | None = None,
+    grow: float = 1.0,
+    text_scale: float = 1.0,
+) -> SheetGeometry:
+    """Return a model's points, faces and links, without texts.
+
+    Parameters
+    ----------
+    model : Model
+    size : width and height of the sheet, pixels
+    area : x, y, width, height, pixels
+        Where the model is fitted in.
+    view : View or None
+        None fits.
+    grow, text_scale : float
+    """
+    places = layout(model)
+    view, outline = _fit(model, places, area, view, grow)
+    collector = _Collector()
+    faces_of = [faces(outline, number, model.motion) for number in range(len(model.bodies))]
+    boxes, fronts = _boxes(places, view, faces_of)
+    face_points = _collect_faces(collector, places, view, faces_of)
+    centres = collector.add(
+        view.to_pixels(places.centres), np.zeros_like(places.centres), np.arange(len(places.centres))
+    )
+    links = link_ends(model, places, view, boxes, grow)
+    groups = _collect_links(collector, places, view, links, model.motion)
+    train = _train(model, places, view, boxes, grow) if model.motion is Motion.SHAFT_TRAIN else None
+    return SheetGeometry(
+        model=model,
+        width=size[0],
+        height=size[1],
+        text_scale=text_scale,
+        grow=grow,
+        view=view,
+        points=collector.points(),
+        faces=face_points,
+        links=groups,
+        centres=centres,
+        boxes=boxes,
+        fronts=fronts,
+        link_ends=links.ends,
+        link_bodies=places.end_bodies,
+        train=train,
+        reach=_reach(links, train, grow),
+    )
+
+
+def _fit(
+    model: Model, places: Layout, area: tuple[float, float, float, float], view: View | None, grow: float
+) -> tuple[View, Outlines]:
+    if view is not None:
+        return view, outlines(model, places, view, grow)
+    matrix = projection(model.motion)
+    world = np.concatenate([places.centres, places.ends.reshape(-1, 3)])
+    largest = _largest(places, grow) if places.stretchable else (np.inf, np.inf)
+    x, y, width, height = area
+    inner = (x + width * 0.12, y + height * 0.1, width * 0.76, height * 0.8)
+    found = fitted(world @ matrix.T, matrix, inner, stretchable=places.stretchable, largest=largest)
+    outline = outlines(model, places, found, grow)
+    for _ in range(ROUNDS):
+        corners = [
+            places.centres[number] + faces(outline, number, model.motion).reshape(-1, 3)
+            for number in range(len(model.bodies))
+        ]
+        flat = np.concatenate([world, *corners]) @ matrix.T
+        found = fitted(flat, matrix, area, stretchable=places.stretchable, largest=largest)
+        outline = outlines(model, places, found, grow)
+    return found, outline
+
+
+def _largest(places: Layout, grow: float) -> tuple[float, float]:
+    largest = []
+    for axis in (0, 1):
+        levels = np.unique(np.concatenate([places.centres[:, axis], places.ends[..., axis].ravel()]))
+        steps = np.diff(levels)
+        largest.append(LARGEST_STEP[axis] * grow / float(steps.min()) if len(steps) else np.inf)
+    return largest[0], largest[1]
+
+
+def _boxes(places: Layout, view: View, faces_of: list[Floats]) -> tuple[Floats, Floats]:
+    boxes, fronts = np.zeros((2, len(faces_of), 4))
+    for number, body_faces in enumerate(faces_of):
+        corners = view.to_pixels(places.centres[number] + body_faces)
+        flat = corners.reshape(-1, 2)
+        boxes[number] = (*flat.min(axis=0), *flat.max(axis=0))
+        front = corners[-1]
+        if len(body_faces) == 1:
+            fronts[number] = boxes[number]
+        else:  # the largest upright rectangle inside the slanted front face
+            ordered = np.sort(front[:, 1])
+            fronts[number] = (front[:, 0].min(), ordered[1], front[:, 0].max(), ordered[2])
+    return boxes, fronts
+
+
+def _collect_faces(
+    collector: _Collector, places: Layout, view: View, faces_of: list[Floats]
+) -> tuple[Indices, ...]:
+    """Add the faces' corners, the bodies furthest from the eye first."""
+    towards = np.cross(view.matrix[0], view.matrix[1])
+    order = np.argsort(places.centres @ towards, kind="stable") if len(faces_of) else []
+    groups = []
+    for number in order:
+        arms = faces_of[number]
+        rest = view.to_pixels(places.centres[number] + arms)
+        indices = collector.add(rest, arms, np.full(arms.shape[:2], number)).reshape(arms.shape[:2])
+        if groups and groups[-1].shape[1] == indices.shape[1]:
+            groups[-1] = np.vstack([groups[-1], indices])
+        else:
+            groups.append(indices)
+    return tuple(groups)
+
+
+def _collect_links(
+    collector: _Collector, places: Layout, view: View, links: LinkEnds, motion: Motion
+) -> tuple[LinkGroup, ...]:
+    if not len(links.ends) or not len(places.centres):
+        return ()
+    arms = places.ends - np.where(
+        (places.end_bodies != GROUND)[..., None], places.centres[places.end_bodies], places.ends
+    )
+    if motion is not Motion.SPACE:  # the seen end, not the true one, stays on the edge of its body
+        arms[..., :2] += (links.ends - view.to_pixels(places.ends)) / np.array([view.scale_x, -view.scale_y])
+    indices = collector.add(links.ends, arms, places.end_bodies).reshape(-1, 2)
+    groups = []
+    for symbol in Symbol:
+        for on_top in (False, True):
+            chosen = [
+                number
+                for number, found in enumerate(links.symbols)
+                if found is symbol and links.on_top[number] == on_top
+            ]
+            if chosen:
+                groups.append(LinkGroup(symbol, indices[chosen], on_top))
+    return tuple(groups)
+
+
+def _train(model: Model, places: Layout, view: View, boxes: Floats, grow: float) -> Train:
+    centres = view.to_pixels(places.centres)
+    axes = []
+    for row in np.unique(centres[:, 1]) if len(centres) else []:
+        on_row = centres[centres[:, 1] == row, 0]
+        axes.append([on_row.min() - 34 * grow, row, on_row.max() + 34 * grow, row])
+    pairs = [
+        pair
+        for link, pair in zip(model.links, places.end_bodies.tolist(), strict=True)
+        if GROUND not in pair and not isinstance(link, Gear)
+    ]
+    radius = 17.0 * grow
+    dials = np.stack([centres[:, 0], boxes[:, 1] - radius - 10 * grow], axis=1)
+    below = _driven(model, places)  # the lower gear of a pair has no room above it
+    dials[below, 1] = boxes[below, 3] + radius + 10 * grow
+    return Train(np.array(axes).reshape(-1, 4), np.array(pairs, dtype=int).reshape(-1, 2), dials, radius)
+
+
+def _driven(model: Model, places: Layout) -> list[int]:
+    """Return the lower body of every gear pair."""
+    lower = []
+    for link, pair in zip(model.links, places.end_bodies.tolist(), strict=True):
+        if isinstance(link, Gear) and GROUND not in pair:
+            lower.append(min(pair, key=lambda body: places.centres[body, 1]))
+    return lower
+
+
+def _reach(links: LinkEnds, train: Train | None, grow: float) -> float:
+    """Return pixels of the largest motion: readable, and short of turning springs inside out."""
+    if train is not None:
+        return TWIST * grow
+    lengths = np.hypot(*(links.ends[~links.on_top, 1] - links.ends[~links.on_top, 0]).T)
+    return float(np.clip(0.42 * lengths.min(initial=70.0 * grow), 9.0 * grow, 28.0 * grow))

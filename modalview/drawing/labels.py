@@ -1,0 +1,130 @@
+"""Places for texts where they meet neither parts nor each other."""
+
+from dataclasses import dataclass
+
+import numpy as np
+
+from modalview.drawing.primitives import Anchor, Floats, Role, Size, Text
+from modalview.drawing.textsize import line_height, text_width
+
+Rectangle = tuple[float, float, float, float]  # x, y, width, height
+
+
+@dataclass(frozen=True, slots=True)
+class Line:
+    """One line of a label."""
+
+    text: str
+    role: Role = Role.INK
+    size: Size = Size.NORMAL
+    bold: bool = False
+
+
+@dataclass(frozen=True, slots=True)
+class Spot:
+    """A place offered to a label: a point, and where the label lies from it.
+
+    ``right`` and ``down`` are -1, 0 or 1: left of, centred on or right of the point, and above, level or below.
+    """
+
+    x: float
+    y: float
+    right: int
+    down: int
+
+
+class Board:
+    """Rectangles that are taken, and the sheet that labels must stay on."""
+
+    def __init__(self, width: float, height: float, text_scale: float) -> None:
+        self.sheet = (width, height)
+        self.text_scale = text_scale
+        self._taken = np.zeros((64, 4))
+        self._count = 0
+
+    def take(self, rectangles: Floats) -> None:
+        """Mark rectangles (n, 4) of x1, y1, x2, y2 as taken."""
+        need = self._count + len(rectangles)
+        while need > len(self._taken):
+            self._taken = np.vstack([self._taken, np.zeros_like(self._taken)])
+        self._taken[self._count : need] = rectangles
+        self._count = need
+
+    def size(self, lines: tuple[Line, ...]) -> tuple[float, float]:
+        """Return width and height of a label in pixels."""
+        wide = max(text_width(li.text, li.size, bold=li.bold, text_scale=self.text_scale) for li in lines)
+        return wide, sum(line_height(li.size, text_scale=self.text_scale) for li in lines)
+
+    def place(
+        self, lines: tuple[Line, ...], spots: list[Spot], *, within: Rectangle | None = None
+    ) -> list[Text]:
+        """Put a label at the first free spot and take its room; nothing when none is free.
+
+        Parameters
+        ----------
+        lines : tuple of Line
+        spots : list of Spot
+            In order of preference.
+        within : Rectangle or None
+            Where the label must lie; None is the sheet.
+        """
+        size = self.size(lines)
+        for spot in spots:
+            left = spot.x + (spot.right - 1) / 2 * size[0]
+            top = spot.y + (spot.down - 1) / 2 * size[1]
+            box = np.array([left, top, left + size[0], top + size[1]])
+            if self._inside(box, within) and not self._meets(box):
+                self.take(box[None] + np.array([-3.0, -1.0, 3.0, 1.0]))
+                return self._texts(lines, spot, (left, top, *size))
+        return []
+
+    def _inside(self, box: Floats, within: Rectangle | None) -> bool:
+        x, y, width, height = within or (2.0, 2.0, self.sheet[0] - 4.0, self.sheet[1] - 4.0)
+        return bool(box[0] >= x and box[1] >= y and box[2] <= x + width and box[3] <= y + height)
+
+    def _meets(self, box: Floats) -> bool:
+        taken = self._taken[: self._count]
+        return bool(((taken[:, :2] < box[2:]) & (taken[:, 2:] > box[:2])).all(axis=1).any())
+
+    def _texts(self, lines: tuple[Line, ...], spot: Spot, box: Rectangle) -> list[Text]:
+        left, top, width, _ = box
+        anchor = {1: Anchor.LEFT, 0: Anchor.MIDDLE, -1: Anchor.RIGHT}[spot.right]
+        x = left + {1: 0.0, 0: 0.5, -1: 1.0}[spot.right] * width
+        texts = []
+        for line in lines:
+            height = line_height(line.size, text_scale=self.text_scale)
+            texts.append(Text(x, top + height / 2, line.text, line.role, line.size, anchor, line.bold))
+            top += height
+        return texts
+
+
+def round_about(box: Rectangle, gap: float = 6.0) -> list[Spot]:
+    """Return spots beside, above and below a rectangle, then further out."""
+    x, y, width, height = box
+    middle = (x + width / 2, y + height / 2)
+    spots = []
+    for step in (gap, gap + 16, gap + 34, gap + 60):
+        spots += [
+            Spot(x + width + step, middle[1], 1, 0),
+            Spot(x - step, middle[1], -1, 0),
+            Spot(middle[0], y - step, 0, -1),
+            Spot(middle[0], y + height + step, 0, 1),
+            Spot(x + width + step / 2, y - step / 2, 1, -1),
+            Spot(x + width + step / 2, y + height + step / 2, 1, 1),
+            Spot(x - step / 2, y - step / 2, -1, -1),
+            Spot(x - step / 2, y + height + step / 2, -1, 1),
+        ]
+    return spots
+
+
+def along(start: Floats, stop: Floats, gap: float = 12.0) -> list[Spot]:
+    """Return spots beside a link: at its middle first, then towards its ends, then further out."""
+    step = stop - start
+    upright = abs(step[1]) >= abs(step[0])
+    spots = []
+    for further in (gap, gap + 14, gap + 40):
+        for share in (0.5, 0.72, 0.28, 0.9, 0.1):
+            x, y = start + share * step
+            sides = [(further, 0.0), (-further, 0.0)] if upright else [(0.0, -further), (0.0, further)]
+            spots += [Spot(x + dx, y + dy, int(np.sign(dx)), int(np.sign(dy))) for dx, dy in sides]
+    return spots

@@ -1,0 +1,152 @@
+"""Where links are seen to begin and end: at the edges of bodies, and long enough to be read."""
+
+from dataclasses import dataclass
+
+import numpy as np
+
+from modalview.drawing.layout import GROUND, Layout
+from modalview.drawing.primitives import Floats
+from modalview.drawing.symbols import Symbol
+from modalview.drawing.view import View
+from modalview.model.parts import Beam, Damper, Gear, Link, Model, Motion, Mount, RigidLink, Shaft
+
+SHORTEST = 46.0  # pixels of a link to the ground
+JOINT = 15.0  # half length of a link whose ends coincide on two bodies
+LANE = 26.0  # pixels between links that join the same two parts
+COINCIDENT = 8.0  # pixels
+
+
+@dataclass(frozen=True, slots=True, eq=False)
+class LinkEnds:
+    """Links on the sheet.
+
+    Parameters
+    ----------
+    symbols : tuple of Symbol
+    ends : array (links, 2, 2)
+        Pixels.
+    on_top : array (links,) of bool
+        Links between touching bodies, drawn over them.
+    """
+
+    symbols: tuple[Symbol, ...]
+    ends: Floats
+    on_top: np.ndarray[tuple[int], np.dtype[np.bool_]]
+
+
+def link_ends(model: Model, places: Layout, view: View, boxes: Floats, grow: float = 1.0) -> LinkEnds:
+    """Return the links' ends in pixels.
+
+    Parameters
+    ----------
+    boxes : array (bodies, 4)
+        x1, y1, x2, y2 of the bodies on the sheet, pixels.
+    """
+    ends = view.to_pixels(places.ends)
+    sideways = places.lanes[:, None] * LANE * grow * _across(ends)
+    if model.motion is not Motion.SHAFT_TRAIN:
+        ends += sideways[:, None]
+    on_top = np.zeros(len(ends), dtype=bool)
+    for number, link in enumerate(model.links):
+        pair = places.end_bodies[number]
+        if GROUND in pair:
+            _lengthen(ends[number], pair, boxes, _pull(link, model.motion), SHORTEST * grow)
+        elif np.hypot(*(ends[number, 1] - ends[number, 0])) < COINCIDENT * grow and not isinstance(
+            link, RigidLink
+        ):
+            on_top[number] = True
+            pull = _pull(link, model.motion)
+            along = np.array([1.0, 0.0]) if pull is None else pull
+            middle = ends[number].mean(axis=0)
+            ends[number] = middle - JOINT * grow * along, middle + JOINT * grow * along
+        if model.motion is not Motion.SPACE and not on_top[number]:
+            _clip(ends[number], pair, boxes)
+    return LinkEnds(tuple(_symbol(link, model.motion) for link in model.links), ends, on_top)
+
+
+def _symbol(link: Link, motion: Motion) -> Symbol:
+    match link:
+        case Damper():
+            return Symbol.DAMPER
+        case Mount() if link.stiffness is None:
+            return Symbol.DAMPER
+        case Mount():
+            return Symbol.MOUNT
+        case Shaft():
+            return Symbol.SHAFT
+        case Beam():
+            return Symbol.BEAM
+        case RigidLink():
+            return Symbol.RIGID
+        case Gear():
+            return Symbol.GEAR
+    return Symbol.SHAFT if motion is Motion.SHAFT_TRAIN else Symbol.SPRING
+
+
+def _across(ends: Floats) -> Floats:
+    step = ends[:, 1] - ends[:, 0]
+    upright = np.abs(step[:, 1:]) >= np.abs(step[:, :1])
+    across: Floats = np.where(upright, [[1.0, 0.0]], [[0.0, 1.0]])
+    return across
+
+
+def _pull(link: Link, motion: Motion) -> Floats | None:
+    """Return the unit step on the sheet along which a link acts, if it says so."""
+    direction = getattr(link, "direction", None)
+    if direction is None or motion not in (Motion.PLANE, Motion.SPACE):
+        return None
+    upright = "z" if motion is Motion.SPACE else "y"
+    if isinstance(direction, str):
+        if direction.lstrip("+-") == "x":
+            return np.array([1.0, 0.0])
+        if direction.lstrip("+-") == upright:
+            return np.array([0.0, 1.0])
+        if direction.endswith("deg"):
+            angle = np.radians(float(direction.removesuffix("deg")))
+            return np.array([np.cos(angle), -np.sin(angle)])
+        return np.array([0.7, -0.7])
+    step = np.array([direction[0], -direction[-1]])
+    length = float(np.hypot(*step))
+    return step / length if length else None
+
+
+def _lengthen(
+    ends: Floats,
+    pair: np.ndarray[tuple[int], np.dtype[np.int_]],
+    boxes: Floats,
+    pull: Floats | None,
+    least: float,
+) -> None:
+    """Move a foot that stands too close to its body away from it: along the pull, else straight down."""
+    foot = int(np.flatnonzero(pair == GROUND)[0])
+    body = int(pair[1 - foot])
+    step = ends[foot] - ends[1 - foot]
+    length = float(np.hypot(*step))
+    if length >= least or body == GROUND:
+        return
+    away = np.array([0.0, 1.0]) if pull is None else pull
+    middle = (boxes[body, :2] + boxes[body, 2:]) / 2
+    if (abs(away[0]) > abs(away[1]) and (ends[1 - foot] - middle) @ away < 0) or (
+        abs(away[0]) <= abs(away[1]) and away[1] < 0
+    ):
+        away = -away
+    if length > COINCIDENT and pull is None:
+        away = step / length
+    ends[foot] = ends[1 - foot] + least * away
+
+
+def _clip(ends: Floats, pair: np.ndarray[tuple[int], np.dtype[np.int_]], boxes: Floats) -> None:
+    """Let a link begin at the edge of the body it is attached inside of."""
+    for side in (0, 1):
+        body = int(pair[side])
+        if body == GROUND:
+            continue
+        here, step = ends[side], ends[1 - side] - ends[side]
+        low, high = boxes[body, :2], boxes[body, 2:]
+        if not ((here >= low - 0.5) & (here <= high + 0.5)).all():
+            continue
+        with np.errstate(divide="ignore", invalid="ignore"):
+            leaving = np.where(step > 0, (high - here) / step, (low - here) / step)
+        share = float(np.min(np.where(step != 0, leaving, np.inf)))
+        if 0 < share < 0.9:
+            ends[side] = here + share * step

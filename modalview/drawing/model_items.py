@@ -1,0 +1,133 @@
+"""A sheet's geometry as items: bodies, links, ground, ghost, paper and texts."""
+
+from dataclasses import replace
+
+import numpy as np
+
+from modalview.drawing.furniture import TitleLines, axes, grid, title_block
+from modalview.drawing.geometry import SheetGeometry
+from modalview.drawing.layout import GROUND
+from modalview.drawing.primitives import Circles, Floats, Item, Lines, Polygons, Role
+from modalview.drawing.symbols import TEMPLATES, Symbol, between, dashed, ground, outline
+from modalview.model.parts import Motion
+
+MARK = 5.5  # radius of the centre of gravity mark, pixels
+DOT = 3.4  # radius of a rigid link's ends
+
+
+def part_items(geometry: SheetGeometry, points: Floats) -> tuple[Item, ...]:
+    """Return links and bodies at the given points (points, 2)."""
+    under = [item for group in geometry.links if not group.on_top for item in _link(geometry, group, points)]
+    over = [item for group in geometry.links if group.on_top for item in _link(geometry, group, points)]
+    width = 1.7 if geometry.grow > 0.8 else 1.3
+    bodies = [Polygons(points[indices], Role.INK, Role.PAPER, width) for indices in geometry.faces]
+    return (*under, *bodies, *over, *_marks(geometry, points), *_teeth(geometry))
+
+
+def ground_items(geometry: SheetGeometry) -> tuple[Item, ...]:
+    """Return the hatched ground under every foot; it looks away from the link."""
+    rows, sides = np.nonzero(geometry.link_bodies == GROUND)
+    feet = geometry.link_ends[rows, sides]
+    step = feet - geometry.link_ends[rows, 1 - sides]
+    level = np.abs(step[:, 0]) > np.abs(step[:, 1])
+    signs = np.where(step < 0, -1.0, 1.0)
+    outward = np.where(level[:, None], signs * [1.0, 0.0], signs * [0.0, 1.0])
+    return (Lines(ground(feet, outward, 20.0 * geometry.grow + 2.0), Role.INK, 1.2),)
+
+
+def ghost_items(geometry: SheetGeometry) -> tuple[Item, ...]:
+    """Return the outlines at rest, dashed."""
+    if geometry.train is not None:
+        return ()
+    sides = [outline(geometry.points.rest[indices]) for indices in geometry.faces]
+    return (Lines(dashed(np.vstack(sides)), Role.GHOST, 1.2),) if sides else ()
+
+
+def train_items(geometry: SheetGeometry) -> tuple[Item, ...]:
+    """Return a shaft train's end views at rest."""
+    train = geometry.train
+    if train is None:
+        return ()
+    rest = np.hstack([train.dials, train.dials - [0.0, train.dial_radius]])
+    return (
+        Circles(train.dials, train.dial_radius, Role.INK, Role.PAPER),
+        Lines(dashed(rest), Role.GHOST, 1.2),
+    )
+
+
+def axis_items(geometry: SheetGeometry) -> tuple[Item, ...]:
+    """Return a shaft train's centre lines: long and short dashes by turns."""
+    if geometry.train is None:
+        return ()
+    long, short = dashed(geometry.train.axes, 14.0, 11.0), geometry.train.axes.copy()
+    short[:, 0] += 18.0
+    return (Lines(np.vstack([long, dashed(short, 3.0, 22.0)]), Role.MUTED, 1.0),)
+
+
+def paper_items(geometry: SheetGeometry, title: TitleLines | None) -> tuple[Item, ...]:
+    """Return grid, axes, title block and excitation arrows."""
+    shown = (grid(geometry.width, geometry.height), *axes(geometry.model.motion, geometry.text_scale)[0])
+    if title is not None:
+        shown += title_block(title, geometry.width, geometry.text_scale)
+    return shown
+
+
+def excitation_items(geometry: SheetGeometry) -> tuple[Item, ...]:
+    """Return the arrows of the excitations."""
+    return () if geometry.arrows is None else (Lines(geometry.arrows, Role.WARN, 2.0),)
+
+
+def label_items(geometry: SheetGeometry, steps: Floats | None = None) -> tuple[Item, ...]:
+    """Return the bodies' texts, moved by ``steps`` (bodies, 2) in pixels."""
+    if steps is None:
+        return tuple(text for _, text in geometry.body_labels)
+    shifts = steps.tolist()
+    return tuple(
+        replace(text, x=text.x + shifts[body][0], y=text.y + shifts[body][1])
+        for body, text in geometry.body_labels
+    )
+
+
+def _link(geometry: SheetGeometry, group: object, points: Floats) -> list[Item]:
+    return _group(geometry.grow, group.symbol, points[group.ends])  # type: ignore[attr-defined]
+
+
+def _group(grow: float, symbol: Symbol, ends: Floats) -> list[Item]:
+    template, width = TEMPLATES[symbol]
+    items: list[Item] = [Lines(between(template, ends, grow), Role.INK, max(width * grow, 1.0))]
+    if symbol is Symbol.RIGID:
+        items.append(Circles(ends.reshape(-1, 2), DOT * grow, Role.INK, Role.INK))
+    return items
+
+
+def _marks(geometry: SheetGeometry, points: Floats) -> tuple[Item, ...]:
+    """Return the quartered circles at the centres of gravity; in a corner where places carry no meaning."""
+    if geometry.grow < 0.8 or geometry.model.motion is Motion.SHAFT_TRAIN or not len(geometry.centres):
+        return ()
+    centres = points[geometry.centres]
+    if geometry.model.motion is Motion.SINGLE_AXIS:
+        rest = geometry.points.rest[geometry.centres]
+        corner = np.stack([geometry.boxes[:, 2] - 11.0, geometry.boxes[:, 1] + 11.0], axis=1)
+        centres = corner + centres - rest
+    turns = np.linspace(0, np.pi / 2, 7)
+    quarter = np.vstack([[[0.0, 0.0]], np.stack([np.cos(turns), -np.sin(turns)], axis=1)]) * MARK
+    filled = np.concatenate([centres[:, None] + quarter, centres[:, None] - quarter])
+    return (
+        Circles(centres, MARK, Role.INK, Role.PAPER, 1.0),
+        Polygons(filled, None, Role.INK),
+    )
+
+
+def _teeth(geometry: SheetGeometry) -> tuple[Item, ...]:
+    """Return short strokes across the line where two gears meet, in a shaft train."""
+    gears = [group for group in geometry.links if group.symbol is Symbol.GEAR]
+    if geometry.train is None or not gears:
+        return ()
+    strokes = []
+    for one, other in geometry.points.bodies[np.vstack([group.ends for group in gears])].tolist():
+        upper, lower = sorted((one, other), key=lambda body: geometry.boxes[body, 1])
+        x1, x2 = geometry.boxes[upper, 0], geometry.boxes[upper, 2]
+        y = (geometry.boxes[upper, 3] + geometry.boxes[lower, 1]) / 2
+        x = np.arange(x1 + 3, x2, 5.0)
+        strokes.append(np.stack([x, 0 * x + y - 5, x, 0 * x + y + 5], axis=1))
+    return (Lines(np.vstack(strokes), Role.INK, 1.2),)

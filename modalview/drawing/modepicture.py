@@ -1,0 +1,26 @@
+"""A small picture of a mode: the sheet's geometry without texts."""
+
+from modalview.drawing.furniture import sheet_of
+from modalview.drawing.geometry import SheetGeometry, bare_geometry
+from modalview.drawing.model_items import axis_items, ghost_items, ground_items, train_items
+from modalview.drawing.motion import Pose, frame
+from modalview.drawing.primitives import Drawing
+from modalview.model.parts import Model
+
+# Symbols shrink with the picture; a sheet of this height has them at full size.
+FULL_HEIGHT = 260.0
+LEAST_GROW, MOST_GROW = 0.3, 0.7
+MARGIN = 12.0
+
+
+def mode_geometry(model: Model, width: float, height: float) -> SheetGeometry:
+    """Lay a model out for small pictures of a size in pixels."""
+    grow = min(max(height / FULL_HEIGHT, LEAST_GROW), MOST_GROW)
+    area = (MARGIN, MARGIN, max(width - 2 * MARGIN, 20.0), max(height - 2 * MARGIN, 20.0))
+    return bare_geometry(model, (width, height), area, None, grow)
+
+
+def mode_picture(geometry: SheetGeometry, posed: Pose, factor: float) -> Drawing:
+    """Return the model at ``factor`` (-1..1) times the amplitude, over its ghost at rest."""
+    under = ground_items(geometry) + ghost_items(geometry) + axis_items(geometry) + train_items(geometry)
+    return sheet_of(under + frame(geometry, posed, factor).items, geometry.width, geometry.height, 1.0)

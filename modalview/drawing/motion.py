@@ -1,0 +1,181 @@
+"""The sheet in motion: a mode's displacement of every point once, then one product per frame."""
+
+from dataclasses import dataclass
+
+import numpy as np
+
+from modalview.drawing.furniture import TitleLines, sheet_of
+from modalview.drawing.geometry import SheetGeometry
+from modalview.drawing.layout import GROUND
+from modalview.drawing.model_items import (
+    ghost_items,
+    ground_items,
+    label_items,
+    paper_items,
+    part_items,
+    train_items,
+)
+from modalview.drawing.primitives import Circles, Drawing, Floats, Item, Lines, Role
+from modalview.drawing.symbols import arrow, turning_arrow
+from modalview.model.parts import Motion
+
+STILL = 0.02  # of the largest motion: below it a part counts as standing still
+DIAL_SWING = np.radians(55.0)  # of the largest rotation at amplitude 1
+ARROW = 40.0  # pixels of the largest motion's arrow
+TURN = np.radians(250.0)  # sweep of the largest rotation's arrow
+
+
+@dataclass(frozen=True, slots=True, eq=False)
+class Pose:
+    """One mode on one sheet.
+
+    Parameters
+    ----------
+    steps : array (points, 2)
+        Pixels that every point moves at amplitude 1.
+    centre_steps : array (bodies, 2)
+        The same of the centres of gravity.
+    turns : array (bodies,)
+        Rotation in the plane of the sheet (about the shaft in a train) over the largest one, -1..1.
+    sizes : array (bodies,)
+        Largest motion of any point of the body over the largest of all, 0..1.
+    """
+
+    steps: Floats
+    centre_steps: Floats
+    turns: Floats
+    sizes: Floats
+
+
+def pose(geometry: SheetGeometry, motion: Floats) -> Pose:
+    """Turn a mode into pixel steps.
+
+    Parameters
+    ----------
+    geometry : SheetGeometry
+    motion : array (bodies, 6)
+        x, y, z, rx, ry, rz of every body, in the order of the model; any scale.
+
+    Notes
+    -----
+    Displacements are linear in the amplitude, as the mode itself is: a point at arm r moves by
+    u + theta x r.
+    """
+    motion = np.asarray(motion, dtype=float).reshape(-1, 6)
+    points, train = geometry.points, geometry.train
+    count = len(geometry.centres)
+    if not count:
+        return Pose(np.zeros_like(points.rest), np.zeros((0, 2)), np.zeros(0), np.zeros(0))
+    if train is not None:
+        turns = _over_largest(motion[:, 5])
+        still = np.zeros_like(points.rest)
+        return Pose(still, np.stack([0 * turns, -turns * geometry.reach], axis=1), turns, np.abs(turns))
+    world = motion[points.bodies, :3] + np.cross(motion[points.bodies, 3:], points.arms)
+    world[points.bodies == GROUND] = 0.0
+    steps = geometry.view.steps(world)
+    lengths = np.hypot(steps[:, 0], steps[:, 1])
+    largest = float(lengths.max(initial=0.0)) or 1.0
+    sizes = np.zeros(count)
+    moving = points.bodies != GROUND
+    np.maximum.at(sizes, points.bodies[moving], lengths[moving] / largest)
+    about = 2 if geometry.model.motion is not Motion.SPACE else 1
+    turns = np.zeros(count) if geometry.model.motion is Motion.SPACE else _over_largest(motion[:, 3 + about])
+    steps *= geometry.reach / largest
+    return Pose(steps, steps[geometry.centres], turns, sizes)
+
+
+def frame(geometry: SheetGeometry, posed: Pose, factor: float) -> Drawing:
+    """Return what moves, at ``factor`` (-1..1) times the amplitude.
+
+    Only arrays are computed and no text is laid out; names inside bodies move with them.
+    """
+    points = geometry.points.rest + factor * posed.steps
+    items = part_items(geometry, points)
+    if geometry.train is not None:
+        items += _twist(geometry, posed, factor)
+    items += label_items(geometry, factor * posed.centre_steps if geometry.train is None else None)
+    return sheet_of(items, geometry.width, geometry.height, geometry.text_scale)
+
+
+def frozen(geometry: SheetGeometry, posed: Pose, factor: float = 1.0) -> Drawing:
+    """Return a frame that tells the motion standing still: arrows of direction and size, still parts marked."""
+    drawing = frame(geometry, posed, factor)
+    sign = 1.0 if factor >= 0 else -1.0
+    items = drawing.items + _arrows(geometry, posed, sign) + _still_marks(geometry, posed)
+    return sheet_of(items, geometry.width, geometry.height, geometry.text_scale)
+
+
+def still_drawing(geometry: SheetGeometry, title: TitleLines | None) -> Drawing:
+    """Return what lies under the frames: paper, ground, labels of links, title block and the ghost at rest."""
+    items = paper_items(geometry, title) + ground_items(geometry) + ghost_items(geometry)
+    if geometry.train is not None:
+        items += train_items(geometry)
+    return sheet_of((*items, *geometry.labels), geometry.width, geometry.height, geometry.text_scale)
+
+
+def moved(
+    geometry: SheetGeometry, motion: Floats, amplitude: float, phase: float, title: TitleLines | None = None
+) -> Drawing:
+    """Return the whole sheet with the model moved to one phase (radians) of a mode, arrows included."""
+    under = still_drawing(geometry, title)
+    over = frozen(geometry, pose(geometry, motion), amplitude * float(np.cos(phase)))
+    return sheet_of(under.items + over.items, geometry.width, geometry.height, geometry.text_scale)
+
+
+def _over_largest(values: Floats) -> Floats:
+    shares: Floats = values / (float(np.abs(values).max(initial=0.0)) or 1.0)
+    return shares
+
+
+def _twist(geometry: SheetGeometry, posed: Pose, factor: float) -> tuple[Item, ...]:
+    """Draw rotation: a line of twist over the shafts, and the turning radius in every end view."""
+    train = geometry.train
+    if train is None:
+        return ()
+    marks = geometry.points.rest[geometry.centres] + factor * posed.centre_steps
+    stems = np.hstack([geometry.points.rest[geometry.centres], marks])
+    line = np.hstack([marks[train.pairs[:, 0]], marks[train.pairs[:, 1]]])
+    swing = factor * posed.turns * DIAL_SWING
+    rim = train.dials + train.dial_radius * np.stack([-np.sin(swing), -np.cos(swing)], axis=1)
+    return (
+        Lines(stems, Role.ACCENT, 1.0),
+        Lines(line, Role.ACCENT, 2.2),
+        Circles(marks, 3.2 * max(geometry.grow, 0.6), Role.ACCENT, Role.ACCENT),
+        Lines(np.hstack([train.dials, rim]), Role.ACCENT, 2.2 * max(geometry.grow, 0.6)),
+    )
+
+
+def _arrows(geometry: SheetGeometry, posed: Pose, sign: float) -> tuple[Item, ...]:
+    """Draw one arrow beside each body along its motion, and one round it where it turns."""
+    if geometry.train is not None:
+        return _turn_arrows(geometry.train.dials, geometry.train.dial_radius + 4, posed.turns * sign)
+    moving = posed.sizes > STILL
+    steps = sign * posed.centre_steps * (ARROW / geometry.reach)
+    long = moving & (np.hypot(steps[:, 0], steps[:, 1]) > 3.0)
+    upright = np.abs(steps[:, 1]) >= np.abs(steps[:, 0])
+    boxes = geometry.boxes
+    middle = (boxes[:, :2] + boxes[:, 2:]) / 2
+    beside = np.stack([boxes[:, 0] - 14.0, middle[:, 1]], axis=1)
+    above = np.stack([middle[:, 0], boxes[:, 1] - 12.0], axis=1)
+    start = np.where(upright[:, None], beside, above) - steps / 2
+    items: tuple[Item, ...] = (Lines(arrow(start[long], steps[long]), Role.ACCENT, 2.0),)
+    corner = np.stack([boxes[:, 2] + 4.0, boxes[:, 1] - 4.0], axis=1)
+    return items + _turn_arrows(corner[moving], 11.0, posed.turns[moving] * sign)
+
+
+def _turn_arrows(centres: Floats, radius: float, turns: Floats) -> tuple[Item, ...]:
+    arcs = [
+        turning_arrow((x, y), radius, np.pi / 2 - turn * TURN / 2, turn * TURN, head=5.0)
+        for (x, y), turn in zip(centres.tolist(), turns.tolist(), strict=True)
+        if abs(turn) > STILL
+    ]
+    return (Lines(np.vstack(arcs), Role.ACCENT, 1.8),) if arcs else ()
+
+
+def _still_marks(geometry: SheetGeometry, posed: Pose) -> tuple[Item, ...]:
+    """Mark parts that stand still: a circle crossed by a level line at the upper left corner."""
+    still = geometry.boxes[posed.sizes <= STILL, :2]
+    if not len(still):
+        return ()
+    bars = np.hstack([still - [9.0, 0.0], still + [9.0, 0.0]])
+    return (Circles(still, 6.0, Role.INK, Role.PAPER, 1.4), Lines(bars, Role.INK, 1.8))

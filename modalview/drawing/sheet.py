@@ -1,0 +1,93 @@
+"""The model as an engineering drawing."""
+
+import numpy as np
+
+from modalview.drawing.furniture import TitleLines, sheet_of, title_lines, title_size
+from modalview.drawing.geometry import SheetGeometry, bare_geometry
+from modalview.drawing.layout import GROUND
+from modalview.drawing.lettering import lettered
+from modalview.drawing.model_items import (
+    axis_items,
+    excitation_items,
+    ground_items,
+    label_items,
+    paper_items,
+    part_items,
+)
+from modalview.drawing.primitives import Box, Drawing, Item, Role
+from modalview.drawing.view import View
+from modalview.model.parts import Model
+
+__all__ = ["SheetGeometry", "TitleLines", "part_at", "sheet_drawing", "sheet_geometry", "title_lines"]
+
+SIDE, BOTTOM = 110.0, 84.0  # pixels kept free for labels, and for ground and player
+NEAR_LINK = 9.0  # pixels: how close to a link's line a click may be
+
+
+def sheet_geometry(
+    model: Model, width: float, height: float, *, text_scale: float = 1.0, view: View | None = None
+) -> SheetGeometry:
+    """Lay a model out on a sheet: once per edit, window size, zoom or text size.
+
+    Parameters
+    ----------
+    model : Model
+    width, height : float
+        Pixels.
+    text_scale : float
+    view : View or None
+        None fits the model; else what ``geometry.view.panned`` or ``zoomed`` gave.
+    """
+    side = min(SIDE * text_scale, 0.2 * width)
+    top = title_size(text_scale)[1] + 46.0 * text_scale
+    area = (side, top, max(width - 2 * side, 40.0), max(height - top - BOTTOM, 40.0))
+    return lettered(bare_geometry(model, (width, height), area, view, 1.0, text_scale))
+
+
+def sheet_drawing(
+    geometry: SheetGeometry, title: TitleLines | None, *, selected: str | None = None
+) -> Drawing:
+    """Return the sheet at rest, with the selected part framed."""
+    items = paper_items(geometry, title) + ground_items(geometry) + axis_items(geometry)
+    items += part_items(geometry, geometry.points.rest) + excitation_items(geometry)
+    items += (*geometry.labels, *label_items(geometry), *_frame(geometry, selected))
+    return sheet_of(items, geometry.width, geometry.height, geometry.text_scale)
+
+
+def part_at(geometry: SheetGeometry, x: float, y: float) -> str | None:
+    """Return the id of the body, link or support at a point of the sheet; None where there is none."""
+    here = np.array([x, y])
+    inside = ((geometry.boxes[:, :2] <= here) & (here <= geometry.boxes[:, 2:])).all(axis=1)
+    if inside.any():
+        sizes = np.prod(geometry.boxes[:, 2:] - geometry.boxes[:, :2], axis=1)
+        return geometry.model.bodies[int(np.argmin(np.where(inside, sizes, np.inf)))].id
+    if not len(geometry.link_ends):
+        return None
+    start, step = geometry.link_ends[:, 0], geometry.link_ends[:, 1] - geometry.link_ends[:, 0]
+    lengths = np.maximum((step**2).sum(axis=1), 1e-12)
+    share = ((here - start) * step).sum(axis=1) / lengths
+    off = np.hypot(*(here - start - np.clip(share, 0, 1)[:, None] * step).T)
+    nearest = int(np.argmin(off))
+    if off[nearest] > 2 * NEAR_LINK:
+        return None
+    link = geometry.model.links[nearest]
+    for side, end in enumerate((link.from_, link.to)):
+        beyond = share[nearest] < 0 if side == 0 else share[nearest] > 1
+        if beyond and geometry.link_bodies[nearest, side] == GROUND and end.support is not None:
+            return end.support
+    return link.id if off[nearest] <= NEAR_LINK else None
+
+
+def _frame(geometry: SheetGeometry, selected: str | None) -> tuple[Item, ...]:
+    for number, body in enumerate(geometry.model.bodies):
+        if body.id == selected:
+            x1, y1, x2, y2 = geometry.boxes[number].tolist()
+            return (Box(x1 - 5, y1 - 5, x2 - x1 + 10, y2 - y1 + 10, 6.0, Role.ACCENT, None, 1.8),)
+    for number, link in enumerate(geometry.model.links):
+        if selected == link.id or (
+            selected is not None and selected in (link.from_.support, link.to.support)
+        ):
+            low, high = geometry.link_ends[number].min(axis=0), geometry.link_ends[number].max(axis=0)
+            x1, y1, x2, y2 = (*(low - 13.0).tolist(), *(high + 13.0).tolist())
+            return (Box(x1, y1, x2 - x1, y2 - y1, 6.0, Role.ACCENT, None, 1.8),)
+    return ()
