@@ -1,5 +1,6 @@
 """Lumped rods and beams of any fineness, as model documents for the convergence cases of the bank."""
 
+from itertools import pairwise
 from typing import Any
 
 import bank_models
@@ -75,8 +76,6 @@ def limit(values: list[float], order: int, step: int = 2) -> float:
     Soc. A 210, 307; repeated after W. Romberg (1955).
     """
     while len(values) > 1:
-        values = [
-            fine + (fine - coarse) / (2**order - 1) for coarse, fine in zip(values, values[1:], strict=False)
-        ]
+        values = [fine + (fine - coarse) / (2**order - 1) for coarse, fine in pairwise(values)]
         order += step
     return values[0]

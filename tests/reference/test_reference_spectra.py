@@ -6,6 +6,7 @@ result (a ratio to a uniform string, a node, an equivalent length) say how they 
 
 import math
 from functools import cache, partial
+from itertools import pairwise
 from typing import Any
 
 import bank_beams
@@ -16,10 +17,9 @@ from bank_solved import GENERIC, Solved, ratio, solve_text, solved
 from check_bank import Figure, cases, figures
 
 from modalview.factor.counts import count_at_most, count_below
-from modalview.factor.shifted import shifted_pencil
 
-# Edges of an open interval are moved inward by this much, relative, to count strictly inside.
-INWARD = 1e-9
+# Edges of an open interval are moved inward by this much, relative: a count may move its edge by 1e-6.
+INWARD = 2e-6
 
 
 def inputs(case: str) -> dict[str, Any]:
@@ -39,7 +39,7 @@ def widest_gap(found: Solved, _: Any) -> list[float]:
 
 def inside_gap(found: Solved, _: Any) -> int:
     low, high = (edge**2 for edge in widest_gap(found, _))
-    shifted = shifted_pencil(found.pencil)
+    shifted = found.pencil.shifted
     upto, below = count_at_most(shifted, high * (1 - INWARD)), count_below(shifted, low * (1 + INWARD))
     assert upto.number is not None
     assert below.number is not None
@@ -79,7 +79,7 @@ def cantilevers() -> dict[int, float]:
 
 def orders(errors: list[float]) -> list[float]:
     """Order of convergence seen between neighbours of halved spacing."""
-    return [math.log2(coarse / fine) for coarse, fine in zip(errors, errors[1:], strict=False)]
+    return [math.log2(coarse / fine) for coarse, fine in pairwise(errors)]
 
 
 def cantilever_order() -> float:
