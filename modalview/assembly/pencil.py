@@ -11,6 +11,7 @@ import scipy.sparse as sp
 from modalview.assembly.condense import massless_recovery
 from modalview.assembly.massroot import mass_root_inverse
 from modalview.errors import NumericalError
+from modalview.factor.shifted import PencilParts, ShiftedPencil, shifted_pencil
 
 Array = npt.NDArray[np.float64]
 
@@ -115,6 +116,29 @@ class Pencil:
             return sp.csc_array(abs(self.K))
         absolute = abs(self.rows)
         return sp.csc_array(absolute.T @ sp.diags_array(np.abs(self.stiffness)) @ absolute)
+
+    @cached_property
+    def shifted(self) -> ShiftedPencil:
+        """K - sigma M for counts and solves at many shifts."""
+        return self.shifted_like(None)
+
+    def shifted_like(self, other: ShiftedPencil | None) -> ShiftedPencil:
+        """Return ``shifted``, with the order and pattern of a pencil of equal structure used again."""
+        terms, definite = 0, False
+        if self.rows is not None and self.stiffness is not None:
+            terms = int(np.bincount(self.rows.indices, minlength=1).max())
+            definite = bool(np.all(self.stiffness >= 0))
+        parts = PencilParts(
+            K=self.K,
+            M=self.M,
+            basis=self.basis,
+            formation=self.formation,
+            massless=self.massless,
+            terms=terms,
+            rigid_modes=self.rigid_body.shape[1],
+            definite=definite,
+        )
+        return shifted_pencil(parts, other)
 
 
 def pencil_of_terms(

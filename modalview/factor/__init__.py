@@ -1,0 +1,1 @@
+"""Sparse LDL^T factors of K - sigma M, inertia counts with proven uncertainty, solves."""

@@ -1,0 +1,188 @@
+"""Numbers of eigenvalues below a value: one-sided, or undecided, never wrong."""
+
+from dataclasses import dataclass
+
+import numpy as np
+
+from modalview.factor.shifted import Inertia, ShiftedPencil
+
+# An edge may move outward by this share of itself, its uncertainty included; beyond, the count is undecided.
+LARGEST_SHARE = 1e-6
+
+# The first edge stands off by this share of the value: nobody means a frequency to 5e-10 of itself, and it
+# is more than the uncertainty of all but badly graded models, so that one factorization decides.
+FIRST_SHARE = 1e-9
+
+# Where a pivot vanishes, the edge moves outward by this share of itself, a few times.
+NUDGE = 1e-7
+NUDGES = 3
+
+# Dense pivoting is tried up to this size. It rescues only shifts where sparse pivots still vanish after the
+# nudges; a model too stiff for the sparse count is too stiff for it too, so a larger limit buys seconds of
+# waiting for the same answer.
+DENSE_LIMIT = 1000
+
+# Around zero there is no frequency to compare with: the edges may stand off by this share of the largest
+# eigenvalue. Rounding reaches about 1e-13 of it.
+LARGEST_SHARE_OF_TOP = 1e-9
+
+
+@dataclass(frozen=True, slots=True)
+class Count:
+    """A number of eigenvalues on one side of an edge.
+
+    Parameters
+    ----------
+    number : int or None
+        None when undecided.
+    edge : float
+        Where it was counted, rad**2/s**2: the value asked for, moved outward.
+    uncertainty : float
+        Proven uncertainty of the edge, rad**2/s**2; 0 where structure alone decides.
+    method : str
+        How it was decided, or why it was not.
+    """
+
+    number: int | None
+    edge: float
+    uncertainty: float
+    method: str
+
+
+@dataclass(frozen=True, slots=True)
+class ZeroModes:
+    """Eigenvalues that are zero within ``reach``.
+
+    Parameters
+    ----------
+    number : int or None
+        N(+reach) - N(-reach); None when undecided.
+    reach : float
+        rad**2/s**2; what lies nearer to zero cannot be told from zero.
+    below : int or None
+        Eigenvalues proven below zero.
+    """
+
+    number: int | None
+    reach: float
+    below: int | None
+
+
+def count_at_most(shifted: ShiftedPencil, lam: float) -> Count:
+    """Count the eigenvalues <= lam: never fewer than there are.
+
+    Parameters
+    ----------
+    shifted : ShiftedPencil
+    lam : float
+        rad**2/s**2.
+
+    Returns
+    -------
+    Count
+        Counted at an edge sigma > lam with sigma - delta > lam, so that everything up to lam is inside and
+        what is counted too much lies within ``edge + uncertainty``. Undecided beyond 1e-6 of lam.
+    """
+    if shifted.definite and lam <= 0:
+        number = shifted.rigid_modes if lam == 0 else 0
+        return Count(number, lam, 0.0, "a sum of positive stiffness terms has none below zero")
+    found = _outward(shifted, lam, 1.0)
+    if isinstance(found, str):
+        return Count(None, lam, np.inf, found)
+    return Count(max(found.negative, shifted.rigid_modes), found.sigma, found.uncertainty, found.method)
+
+
+def count_below(shifted: ShiftedPencil, lam: float) -> Count:
+    """Count the eigenvalues < lam: never more than there are, never fewer than the rigid-body modes.
+
+    Parameters
+    ----------
+    shifted : ShiftedPencil
+    lam : float
+        rad**2/s**2.
+
+    Returns
+    -------
+    Count
+        Counted at an edge sigma < lam with sigma + delta < lam. Undecided beyond 1e-6 of lam. At lam <= 0
+        the rigid-body modes, which lie in no band, are still counted.
+    """
+    rigid = shifted.rigid_modes
+    if shifted.definite and lam <= 0:
+        return Count(rigid, lam, 0.0, "a sum of positive stiffness terms has none below zero")
+    found = _outward(shifted, lam, -1.0)
+    if isinstance(found, str):
+        return Count(None, lam, np.inf, found)
+    return Count(max(found.negative, rigid), found.sigma, found.uncertainty, found.method)
+
+
+def count_negative(shifted: ShiftedPencil) -> Count:
+    """Count the eigenvalues proven below zero, a little left of it; more than 0 is an unstable model.
+
+    Never more than there are. Zero by structure where K is a sum of positive terms.
+    """
+    if shifted.definite:
+        return Count(0, 0.0, 0.0, "a sum of positive stiffness terms has none below zero")
+    found = _outward(shifted, 0.0, -1.0)
+    if isinstance(found, str):
+        return Count(None, 0.0, np.inf, found)
+    return Count(found.negative, found.sigma, found.uncertainty, found.method)
+
+
+def count_zero(shifted: ShiftedPencil) -> ZeroModes:
+    """Count the eigenvalues that cannot be told from zero, from N(+delta) and N(-delta).
+
+    For matrices of others. Where a model's structure gives their number, use that: ``rigid_modes``.
+    """
+    above, below = _outward(shifted, 0.0, 1.0), _outward(shifted, 0.0, -1.0)
+    if isinstance(above, str) or isinstance(below, str):
+        return ZeroModes(None, np.inf, None)
+    reach = max(above.sigma + above.uncertainty, below.uncertainty - below.sigma)
+    return ZeroModes(above.negative - below.negative, reach, below.negative)
+
+
+def _outward(shifted: ShiftedPencil, lam: float, side: float) -> Inertia | str:
+    """Factor at an edge beyond lam on one side that proves its count, or say why none does.
+
+    The first edge is a guess, the second follows from the uncertainty seen there, then come the nudges.
+    """
+    allowed = LARGEST_SHARE * abs(lam) if lam else LARGEST_SHARE_OF_TOP * shifted.extents.top
+    least = shifted.least_uncertainty(lam)
+    if not least < allowed:
+        return _too_stiff(least, lam)
+    unit = NUDGE / LARGEST_SHARE * allowed
+    distance = FIRST_SHARE / LARGEST_SHARE * allowed
+    nudged = 0
+    while True:
+        sigma = _displaced(lam, side, distance)
+        found = shifted.factorize(sigma)
+        if _proves(found, lam, side, allowed):
+            return found
+        if distance < 2 * found.uncertainty <= unit:
+            distance = 2 * found.uncertainty
+        elif nudged < NUDGES:
+            nudged += 1
+            distance = nudged * unit
+        else:
+            break
+    if shifted.n <= DENSE_LIMIT:
+        dense = shifted.factorize_dense(sigma)
+        if _proves(dense, lam, side, allowed):
+            return dense
+    return _too_stiff(found.uncertainty, lam)
+
+
+def _displaced(lam: float, side: float, distance: float) -> float:
+    """Lam moved outward by at least one unit in the last place."""
+    moved = lam + side * distance
+    return float(moved if moved != lam else np.nextafter(lam, side * np.inf))
+
+
+def _proves(found: Inertia, lam: float, side: float, allowed: float) -> bool:
+    """Whether everything on this side of lam is counted, and nothing beyond what is allowed."""
+    clearance = side * (found.sigma - lam)
+    return found.uncertainty < clearance and clearance + found.uncertainty <= allowed
+
+
+def _too_stiff(uncertainty: float, lam: float) -> str:
+    return f"undecided: rounding reaches {uncertainty:.1e} rad²/s² beside {lam:.1e} rad²/s²"

@@ -1,0 +1,201 @@
+"""One fixed pattern for K - sigma M at every shift, and what its factors look like."""
+
+from copy import copy
+from dataclasses import dataclass
+from typing import Literal
+
+import numpy as np
+import numpy.typing as npt
+import scipy.sparse as sp
+from scipy.sparse.linalg import SuperLU, splu
+
+Array = npt.NDArray[np.float64]
+Indices = npt.NDArray[np.intp]
+
+# Columns SuperLU updates together, and the subtree it merges into one supernode; measured best from n = 10
+# to 1e4 on chains and plane models (the library's own 20 and 10 cost a tenth to a half more).
+PANEL, RELAX = 4, 10
+
+
+@dataclass(frozen=True, slots=True, eq=False)
+class Factors:
+    """Where the entries of L and U stand when nothing is pivoted and nothing cancels to an exact zero.
+
+    Attributes
+    ----------
+    lower_indptr, lower_indices, upper_indptr, upper_indices : int arrays
+        Compressed columns of L and U as SuperLU hands them out.
+    mirror : int array
+        ``U.data[mirror]`` runs beside ``L.data``: u_kj beside l_jk.
+    columns : int array
+        Column of each entry of L.
+    diagonal : int array (n,)
+        Position of each diagonal entry in ``L.data``.
+    """
+
+    lower_indptr: npt.NDArray[np.int32]
+    lower_indices: npt.NDArray[np.int32]
+    upper_indptr: npt.NDArray[np.int32]
+    upper_indices: npt.NDArray[np.int32]
+    mirror: Indices
+    columns: Indices
+    diagonal: Indices
+
+    def describe(self, lu: "SuperLU[np.float64]") -> bool:
+        """Return whether the factors have exactly this pattern."""
+        return bool(
+            np.array_equal(lu.L.indices, self.lower_indices)
+            and np.array_equal(lu.U.indices, self.upper_indices)
+        )
+
+
+@dataclass(frozen=True, slots=True, eq=False)
+class Pattern:
+    """The union pattern of K and M, in an order that keeps the factors sparse.
+
+    Attributes
+    ----------
+    stored : int array (n,)
+        Row of each coordinate in the stored matrix.
+    turned : int array (n,)
+        Row of each stored row in the factors (a postordering of the elimination tree; mostly 0, 1, 2...).
+    indptr, indices : int arrays
+        Compressed columns of the stored matrix.
+    keys : int array
+        column * n + row of each stored entry, ascending.
+    factors : Factors or None
+        None when L and U of the reference do not mirror each other.
+    terms : int array (n,)
+        Entries in each row of L, by position in the factors.
+    template : csc_array (n, n)
+        A matrix of this pattern, to be copied and filled.
+    """
+
+    stored: Indices
+    turned: Indices
+    indptr: npt.NDArray[np.int32]
+    indices: npt.NDArray[np.int32]
+    keys: npt.NDArray[np.int64]
+    factors: Factors | None
+    terms: Indices
+    template: sp.csc_array
+
+    @property
+    def n(self) -> int:
+        """Number of coordinates."""
+        return int(self.stored.size)
+
+    @property
+    def place(self) -> Indices:
+        """Row of each coordinate in the factors."""
+        return self.turned[self.stored]
+
+    def matrix(self, data: Array) -> sp.csc_array:
+        """Return the stored matrix with these values."""
+        filled = copy(self.template)  # shallow: the constructor would cost as much as a small factorization
+        filled.data = data
+        return filled
+
+    def holds(self, matrix: sp.csc_array) -> bool:
+        """Return whether every stored entry of a matrix has a place here."""
+        if matrix.shape[0] != self.n:
+            return False
+        keys = self._keys(matrix)
+        found = np.searchsorted(self.keys, keys)
+        return bool(np.array_equal(self.keys[np.minimum(found, self.keys.size - 1)], keys))
+
+    def values(self, matrix: sp.csc_array) -> Array:
+        """Return the values of a matrix whose entries lie in this pattern, at the stored positions."""
+        data = np.zeros(self.keys.size)
+        np.add.at(data, np.searchsorted(self.keys, self._keys(matrix)), matrix.data)
+        return data
+
+    def _keys(self, matrix: sp.csc_array) -> npt.NDArray[np.int64]:
+        rows, cols = _coordinates(matrix)
+        return self.stored[cols].astype(np.int64) * self.n + self.stored[rows]
+
+    def factorize(self, data: Array) -> "SuperLU[np.float64]":
+        """Factor without pivoting unless a pivot is exactly zero; RuntimeError when singular."""
+        return _splu(self.matrix(data), "NATURAL")
+
+
+def union_pattern(K: sp.csc_array, M: sp.csc_array) -> Pattern:
+    """Order the union of two symmetric patterns by minimum degree and find what its factors look like.
+
+    Parameters
+    ----------
+    K, M : csc_array (n, n)
+        Symmetric, both triangles stored. Stored zeros count as entries; the diagonal always does.
+
+    Notes
+    -----
+    The reference factored here is -1 beside a dominant diagonal: an M-matrix, whose fill is strictly
+    negative (M. Fiedler, V. Ptak (1962), Czechoslovak Math. J. 12, 382), so no entry cancels and every
+    later factor of this pattern has entries at most there. Cost: two sparse factorizations, once.
+    """
+    n = K.shape[0]
+    pairs = [_coordinates(K), _coordinates(M), (np.arange(n), np.arange(n))]
+    rows = np.concatenate([pair[0] for pair in pairs])
+    cols = np.concatenate([pair[1] for pair in pairs])
+    first = np.unique(cols.astype(np.int64) * n + rows)
+    stored = _splu(_reference(first, n), "MMD_AT_PLUS_A").perm_c.astype(np.intp)
+    keys = np.sort(stored[first // n].astype(np.int64) * n + stored[first % n])
+    reference = _reference(keys, n)
+    lu = _splu(reference, "NATURAL")
+    return Pattern(
+        stored=stored,
+        turned=lu.perm_c.astype(np.intp),
+        indptr=reference.indptr,
+        indices=reference.indices,
+        keys=keys,
+        factors=_factors(lu),
+        terms=np.bincount(lu.L.indices, minlength=n),
+        template=reference,
+    )
+
+
+def _splu(matrix: sp.csc_array, ordering: Literal["NATURAL", "MMD_AT_PLUS_A"]) -> "SuperLU[np.float64]":
+    return splu(
+        matrix,
+        permc_spec=ordering,
+        diag_pivot_thresh=0.0,
+        relax=RELAX,
+        panel_size=PANEL,
+        options={"SymmetricMode": True},
+    )
+
+
+def _coordinates(matrix: sp.csc_array) -> tuple[Indices, Indices]:
+    cols = np.repeat(np.arange(matrix.shape[1]), np.diff(matrix.indptr))
+    return np.asarray(matrix.indices, dtype=np.intp), cols
+
+
+def _reference(keys: npt.NDArray[np.int64], n: int) -> sp.csc_array:
+    rows, cols = keys % n, keys // n
+    count = np.bincount(cols, minlength=n)
+    indptr = np.concatenate([[0], np.cumsum(count)]).astype(np.int32)
+    data = np.where(rows == cols, count[cols] + 1.0, -1.0)
+    return sp.csc_array((data, rows.astype(np.int32), indptr), shape=(n, n))
+
+
+def _factors(lu: "SuperLU[np.float64]") -> Factors | None:
+    lower, upper = lu.L, lu.U
+    n = lower.shape[0]
+    below, columns = _coordinates(lower)
+    right_of, across = _coordinates(upper)
+    lower_keys = columns.astype(np.int64) * n + below
+    upper_keys = right_of.astype(np.int64) * n + across
+    lower_order, upper_order = np.argsort(lower_keys), np.argsort(upper_keys)
+    if not np.array_equal(lower_keys[lower_order], upper_keys[upper_order]):
+        return None
+    mirror = np.empty(lower.nnz, dtype=np.intp)
+    mirror[lower_order] = upper_order
+    return Factors(
+        lower_indptr=lower.indptr,
+        lower_indices=lower.indices,
+        upper_indptr=upper.indptr,
+        upper_indices=upper.indices,
+        mirror=mirror,
+        columns=columns,
+        diagonal=np.flatnonzero(below == columns),
+    )
