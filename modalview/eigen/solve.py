@@ -21,7 +21,6 @@ from modalview.eigen.polish import ritz
 from modalview.eigen.rayleigh import Energy, Rayleigh
 from modalview.eigen.standard import eigenpairs, eigenvalues
 from modalview.errors import CancelledError, InputError
-from modalview.factor.shifted import ShiftedPencil, shifted_pencil
 
 Array = npt.NDArray[np.float64]
 
@@ -93,9 +92,8 @@ def find_modes(
         shapes, found = _ascending(shapes, energy.rayleigh(shapes))
         intervals = enclose(energy, shapes, found, deflation.shapes.shape[1])
         step("counts", 0.8)
-        shifted = _shifted(pencil)
-        modes = _assembled(deflation, shapes, found, intervals, signs(shifted, intervals))
-        counts = confirm(shifted, modes.lower, modes.upper)
+        modes = _assembled(deflation, shapes, found, intervals, signs(pencil.shifted, intervals))
+        counts = confirm(pencil.shifted, modes.lower, modes.upper)
     return replace(modes, method=method, counts=counts, complete=verdict(intervals, counts)).frozen()
 
 
@@ -109,20 +107,6 @@ def all_eigenvalues(pencil: Pencil) -> Array:
         deflation = deflate(pencil)
         elastic = eigenvalues(deflation.both_sides(pencil.standard.toarray()))
     return np.sort(np.concatenate([np.zeros(deflation.shapes.shape[1]), elastic]))
-
-
-def _shifted(pencil: Pencil) -> ShiftedPencil:
-    known = pencil.rows is not None and pencil.stiffness is not None
-    return shifted_pencil(
-        pencil.K,
-        pencil.M,
-        pencil.basis,
-        pencil.formation,
-        massless=pencil.massless,
-        rigid_modes=pencil.rigid_body.shape[1],
-        terms=int(np.bincount(pencil.rows.indices).max(initial=0)) if pencil.rows is not None else 0,
-        definite=known and bool(np.all(pencil.stiffness >= 0)),
-    )
 
 
 def _check_size(pencil: Pencil) -> None:
