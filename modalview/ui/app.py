@@ -1,0 +1,41 @@
+"""Starts the window."""
+
+import sys
+from collections.abc import Sequence
+from pathlib import Path
+
+from PySide6.QtCore import QTimer
+from PySide6.QtWidgets import QApplication
+
+from modalview.ui.failure import show_unexpected
+from modalview.ui.settings import Settings, kept_settings
+from modalview.ui.window import Window
+from modalview.ui.worker import Worker
+
+
+def application(arguments: Sequence[str] = ("keepclear",)) -> QApplication:
+    """Return the one Qt application, made if there is none."""
+    made = QApplication.instance() or QApplication(list(arguments))
+    made.setApplicationName("Keepclear")
+    made.setApplicationDisplayName("Keepclear")
+    made.setStyle("Fusion")  # one look to be drawn for, on every system
+    return made
+
+
+def new_window(settings: Settings) -> Window:
+    """Return a window with its own thread, which starts after the first paint."""
+    window = Window(settings, Worker())
+    QTimer.singleShot(0, window, window.start_worker)
+    return window
+
+
+def run(file: Path | None) -> int:
+    """Show the window until it is closed; return the exit status."""
+    program = application()
+    sys.excepthook = show_unexpected
+    window = new_window(kept_settings())
+    program.styleHints().colorSchemeChanged.connect(window.apply_theme)
+    window.show()
+    if file is not None:
+        QTimer.singleShot(0, window, lambda: window.filing.open(file))
+    return program.exec()

@@ -1,0 +1,103 @@
+"""The verdict in one sentence across the top, and the button that finds the modes."""
+
+from typing import Any
+
+from PySide6.QtCore import Qt, Signal
+from PySide6.QtWidgets import QFrame, QHBoxLayout, QLabel, QProgressBar, QPushButton, QSizePolicy, QWidget
+
+from modalview.ui.analysis import Analysis
+from modalview.ui.symbols import VerdictSign
+from modalview.ui.theme import LIGHT, Theme
+
+_WORDS = {
+    "clear": "Clear",
+    "clear at nominal only": "Clear at nominal only",
+    "mode in band": "Mode in band",
+}
+
+
+class Banner(QFrame):
+    """Sign, word and sentence of the verdict; Find modes, or its progress and Cancel."""
+
+    find_asked = Signal()
+    cancel_asked = Signal()
+
+    def __init__(self, parent: QWidget | None = None) -> None:
+        super().__init__(parent)
+        self.setObjectName("banner")
+        self._theme = LIGHT
+        self._verdict: str | None = None
+        self.sign = VerdictSign(24, self)
+        self.word = QLabel(self)
+        self.word.setObjectName("verdictWord")
+        self.sentence = QLabel(self)
+        self.sentence.setObjectName("verdictSentence")
+        self.sentence.setWordWrap(True)
+        self.sentence.setTextInteractionFlags(Qt.TextInteractionFlag.TextSelectableByMouse)
+        self.sentence.setSizePolicy(QSizePolicy.Policy.Expanding, QSizePolicy.Policy.MinimumExpanding)
+        self.sentence.setAccessibleName("Verdict")
+        self.progress = QProgressBar(self)
+        self.progress.setAccessibleName("Progress of finding modes")
+        self.progress.setFixedWidth(150)
+        self.cancel = QPushButton("Cancel", self)
+        self.cancel.clicked.connect(self.cancel_asked)
+        self.find = QPushButton("Find modes", self)
+        self.find.setObjectName("findModes")
+        self.find.setToolTip("Find every mode of the model (Ctrl+Enter)")
+        self.find.clicked.connect(self.find_asked)
+        self._lay_out()
+
+    def _lay_out(self) -> None:
+        layout = QHBoxLayout(self)
+        layout.setContentsMargins(16, 7, 12, 7)
+        layout.setSpacing(10)
+        layout.addWidget(self.sign)
+        layout.addWidget(self.word)
+        layout.addWidget(self.sentence, 1)
+        for widget in (self.progress, self.cancel, self.find):
+            layout.addWidget(widget)
+
+    def set_theme(self, theme: Theme) -> None:
+        """Repaint the sign."""
+        self._theme = theme
+        self.sign.show_verdict(self._verdict, theme)
+
+    def show_analysis(self, analysis: Analysis) -> None:
+        """Show what is known now."""
+        verdict, word, sentence = _said(analysis)
+        self._verdict = verdict
+        self.sign.show_verdict(verdict, self._theme)
+        self.word.setText(word)
+        self.word.setVisible(bool(word))
+        self.word.setProperty("verdict", verdict or "none")
+        self.word.style().polish(self.word)
+        self.sentence.setText(sentence)
+        self.show_busy(analysis)
+
+    def show_busy(self, analysis: Analysis) -> None:
+        """Show progress and Cancel while the modes are being found, the button otherwise."""
+        what, share = analysis.progress
+        self.progress.setVisible(analysis.finding)
+        self.cancel.setVisible(analysis.finding)
+        self.find.setVisible(not analysis.finding)
+        self.find.setEnabled(analysis.outlook is not None)
+        self.progress.setRange(0, 100 if share > 0 else 0)
+        self.progress.setValue(round(100 * share))
+        self.progress.setFormat(what or "finding modes")
+        self.progress.setToolTip(what)
+
+
+def _said(analysis: Analysis) -> tuple[str | None, str, str]:
+    """Return verdict, word and sentence."""
+    if analysis.refusal is not None and analysis.outlook is None:
+        return None, "Cannot be analysed", " ".join(str(analysis.refusal).splitlines())
+    if analysis.outlook is None:
+        return None, "", "Reading the model…" if analysis.looking else ""
+    known: Any = analysis.solution if analysis.solution_current else analysis.outlook
+    sentence = known.sentence
+    if analysis.refusal is not None:
+        sentence = f"{sentence} The modes were not found: {analysis.refusal}"
+    verdict = analysis.outlook.verdict
+    if verdict is None:
+        return None, "Nothing to check", sentence
+    return str(verdict), _WORDS[str(verdict)], sentence

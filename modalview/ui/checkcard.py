@@ -1,0 +1,117 @@
+"""One checked order: sign, frequency, verdict in words, nearest mode and whether it is driven."""
+
+from typing import Any
+
+from PySide6.QtCore import Qt
+from PySide6.QtWidgets import QFrame, QGridLayout, QLabel, QWidget
+
+from modalview.ui.symbols import VerdictSign
+from modalview.ui.theme import Theme
+from modalview.units.show import significant
+
+_TURN = 6.283185307179586  # rad of one turn
+
+
+def excitation_text(band: Any) -> str:
+    """Return the excitation frequency, or the range it sweeps.
+
+    >>> from types import SimpleNamespace as Band
+    >>> excitation_text(Band(excitation=(308.9, 308.9)))
+    '49.16 Hz'
+    >>> excitation_text(Band(excitation=(62.83, 188.5)))
+    '10.00 to 30.00 Hz'
+    """
+    low, high = (edge / _TURN for edge in band.excitation)
+    if low == high:
+        return f"{significant(low, 4)} Hz"
+    return f"{significant(low, 4)} to {significant(high, 4)} Hz"
+
+
+def signed_percent(share: float) -> str:
+    """Return a separation with its sign.
+
+    >>> signed_percent(0.0426), signed_percent(-0.5), signed_percent(0.0)
+    ('+4.3 %', '−50 %', '0 %')
+    """
+    size = abs(100 * share)
+    if size < 0.05:
+        return "0 %"
+    return f"{'+' if share > 0 else '−'}{size:.{1 if size < 9.95 else 0}f} %"
+
+
+def _counted(check: Any) -> str:
+    if check.inside is None or check.possible is None:
+        return "rounding leaves the count of modes in the band open"
+    now = "no mode" if check.inside == 0 else f"{check.inside} mode{'s' if check.inside > 1 else ''}"
+    if check.possible == check.inside:
+        return f"{now} in the band at any value within tolerance" if check.certain == check.inside else now
+    return f"{now} in the band now, up to {check.possible} within tolerance"
+
+
+def nearest_text(check: Any) -> str:
+    """Return the second line of a card: the nearest mode, or the counts before the solve."""
+    if check.nearest_mode is None or check.separation is None:
+        return _counted(check)
+    words = f"mode {check.nearest_mode}: {signed_percent(check.separation)}"
+    worst = check.worst_separation
+    if worst is not None and abs(worst - check.separation) > 5e-4:
+        words += f", {signed_percent(worst)} at worst"
+    drive = next((one for one in check.drives if one.mode == check.nearest_mode), None)
+    if drive is not None and str(drive.drive) != "unknown":
+        words += f"; {drive.drive}"
+    return words
+
+
+class CheckCard(QFrame):
+    """A card of the results; updated in place on every edit."""
+
+    def __init__(self, parent: QWidget | None = None) -> None:
+        super().__init__(parent)
+        self.setProperty("role", "card")
+        self.sign = VerdictSign(17, self)
+        self.label = QLabel(self)
+        self.label.setProperty("role", "strong")
+        self.frequency = QLabel(self)
+        self.verdict = QLabel(self)
+        self.verdict.setProperty("role", "verdict")
+        self.verdict.setAlignment(Qt.AlignmentFlag.AlignRight | Qt.AlignmentFlag.AlignVCenter)
+        self.nearest = QLabel(self)
+        self.reason = QLabel(self)
+        for text in (self.verdict, self.nearest, self.reason):
+            text.setWordWrap(True)
+        for text in (self.nearest, self.reason):
+            text.setProperty("role", "small")
+        layout = QGridLayout(self)
+        layout.setContentsMargins(9, 6, 9, 6)
+        layout.setHorizontalSpacing(7)
+        layout.setVerticalSpacing(2)
+        layout.setColumnStretch(3, 1)
+        layout.addWidget(self.sign, 0, 0)
+        layout.addWidget(self.label, 0, 1)
+        layout.addWidget(self.frequency, 0, 2)
+        layout.addWidget(self.verdict, 0, 3)
+        layout.addWidget(self.nearest, 1, 1, 1, 3)
+        layout.addWidget(self.reason, 2, 1, 1, 3)
+
+    def show_check(self, check: Any, theme: Theme, *, current: bool) -> None:
+        """Show a resonance.Check; ``current`` tells whether the nearest mode is of this model."""
+        verdict = str(check.verdict)
+        self.sign.show_verdict(verdict, theme)
+        self.label.setText(check.band.label)
+        self.frequency.setText(excitation_text(check.band))
+        self.verdict.setText(check.wording)
+        self.verdict.setProperty("verdict", verdict)
+        self.verdict.style().polish(self.verdict)
+        self.nearest.setText(nearest_text(check) if current else _counted(check))
+        self.reason.setText(check.reason)
+        self.reason.setVisible(verdict != "clear")
+        self.setToolTip(f"{check.band.check}: {check.reason}\n{_margin_text(check.band)}")
+        self.setAccessibleName(f"{check.band.label}, {self.frequency.text()}: {check.wording}")
+        self.setAccessibleDescription(f"{self.nearest.text()}. {check.reason}")
+
+
+def _margin_text(band: Any) -> str:
+    low, high = (significant(edge / _TURN, 4) for edge in band.nominal)
+    below, above = (significant(100 * share, 3) for share in band.margin)
+    wanted = f"{below} %" if below == above else f"{below} % below, {above} % above"
+    return f"margin wanted {wanted}: no mode from {low} to {high} Hz"

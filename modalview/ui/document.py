@@ -1,0 +1,83 @@
+"""The open model, its file and its undo stack: every change of the model goes through here."""
+
+import time
+from pathlib import Path
+
+from PySide6.QtCore import QObject, Signal
+from PySide6.QtGui import QUndoStack
+
+from modalview.model.addresses import Address
+from modalview.model.edits import Edit, set_typed
+from modalview.model.parts import Model
+from modalview.store import FileStamp, open_model, save_model
+from modalview.ui.commands import EditCommand
+
+
+class Document(QObject):
+    """One model in the window.
+
+    ``model`` is None while nothing is open. ``clean_changed`` of the stack alone says "modified".
+    """
+
+    opened = Signal()  # another model is in the window
+    model_changed = Signal()  # the same model was edited
+    clean_changed = Signal(bool)
+    saved = Signal()
+
+    def __init__(self, parent: QObject | None = None) -> None:
+        super().__init__(parent)
+        self.model: Model | None = None
+        self.path: Path | None = None
+        self.example = False  # bundled examples are opened, never written
+        self._stamp: FileStamp | None = None
+        self.saved_at: float | None = None
+        self.stack = QUndoStack(self)
+        self.stack.cleanChanged.connect(self.clean_changed)
+
+    @property
+    def modified(self) -> bool:
+        """Whether there is something to save."""
+        return not self.stack.isClean()
+
+    @property
+    def name(self) -> str:
+        """Return the file's name, or what stands in its place."""
+        return self.path.name if self.path else "not saved yet"
+
+    def open(self, path: Path, *, example: bool = False) -> None:
+        """Open a file; when it cannot be used its error is raised and the open model stays."""
+        model, stamp = open_model(path)
+        self.model = model
+        self.path, self.example, self._stamp = path, example, stamp
+        self.saved_at = None
+        self.stack.clear()
+        self.opened.emit()
+
+    def save(self, path: Path, *, overwrite: bool = False) -> None:
+        """Save under a path; FileChangedError when another program wrote there, unless ``overwrite``."""
+        if self.model is None:
+            return
+        known = self._stamp if path == self.path and not overwrite else None
+        self._stamp = save_model(self.model, path, known=known)
+        self.path, self.example = path, False
+        self.saved_at = time.monotonic()
+        self.stack.setClean()
+        self.saved.emit()
+
+    def type_value(self, address: Address, text: str) -> None:
+        """Type a text at an address; InputError with the reason when it is refused, changing nothing."""
+        if self.model is None:
+            return
+        edit = set_typed(self.model, address, text)
+        if edit.old != edit.new:
+            self.push(edit)
+
+    def push(self, edit: Edit) -> None:
+        """Make an edit that can be undone."""
+        self.stack.push(EditCommand(edit, self))
+
+    def replace_model(self, model: Model) -> None:
+        """Put an edited model in place; for the undo commands alone."""
+        self.model = model
+        self.model_changed.emit()
+

@@ -1,0 +1,124 @@
+"""Opening and saving as a conversation: what is asked, and what happens then."""
+
+from collections.abc import Callable
+from pathlib import Path
+
+from PySide6.QtCore import QObject, Qt
+from PySide6.QtWidgets import QFileDialog, QWidget
+
+from modalview.errors import FaultsError, FileChangedError, InputError
+from modalview.ui import settings as names
+from modalview.ui.dialogs import TextDialog, ask
+from modalview.ui.document import Document
+from modalview.ui.examples import SUFFIX
+from modalview.ui.settings import Settings
+
+Then = Callable[[], None]
+_FILTER = f"Keepclear models (*{SUFFIX});;All files (*)"
+_RECENT_KEPT = 8
+
+
+class Filing(QObject):
+    """Guards the model against loss and the file against being overwritten."""
+
+    def __init__(self, document: Document, settings: Settings, window: QWidget) -> None:
+        super().__init__(window)
+        self._document, self._settings, self._window = document, settings, window
+
+    def guard(self, then: Then) -> None:
+        """Do something that would lose unsaved changes, after asking what to do with them."""
+        if not self._document.modified:
+            then()
+            return
+        ask(
+            self._window,
+            f"Save the changes of {self._document.name}?",
+            "Changes that are not saved are lost.",
+            (("Save", lambda: self.save(then)), ("Discard", then), ("Cancel", None)),
+        )
+
+    # Opening
+
+    def choose(self) -> None:
+        """Ask for a file and open it."""
+        self.guard(self._choose)
+
+    def _choose(self) -> None:
+        dialog = self._file_dialog("Open a model", QFileDialog.AcceptMode.AcceptOpen)
+        dialog.setFileMode(QFileDialog.FileMode.ExistingFile)
+        dialog.fileSelected.connect(lambda path: self.read(Path(path)))
+        dialog.open()
+
+    def open(self, path: Path, *, example: bool = False) -> None:
+        """Open a file, after asking about unsaved changes."""
+        self.guard(lambda: self.read(path, example=example))
+
+    def read(self, path: Path, *, example: bool = False) -> None:
+        """Open a file; when it cannot be used say why, all at once, and keep the open model."""
+        kept = "" if self._document.model is None else " The open model is kept."
+        try:
+            self._document.open(path, example=example)
+        except FaultsError as error:
+            number = len(error.faults)
+            lead = f"{path.name} cannot be opened: {number} fault{'s' if number > 1 else ''}.{kept}"
+            TextDialog("Faults of the file", lead, str(error), self._window).open()
+        except InputError as error:
+            self._tell(f"{path.name} cannot be opened.{kept}", error)
+        else:
+            if not example:
+                self._remember(path)
+
+    def _remember(self, path: Path) -> None:
+        place = str(path.resolve())
+        recent = [one for one in self._settings.get(names.RECENT) if one != place]
+        self._settings.set(names.RECENT, [place, *recent][:_RECENT_KEPT])
+        self._settings.set(names.FOLDER, str(path.resolve().parent))
+
+    # Saving
+
+    def save(self, then: Then | None = None) -> None:
+        """Save where the model came from; an example or a new model is asked for its place."""
+        path = self._document.path
+        if path is None or self._document.example:
+            self.save_as(then)
+        else:
+            self._write(path, then)
+
+    def save_as(self, then: Then | None = None) -> None:
+        """Ask for a place and save there."""
+        dialog = self._file_dialog("Save the model", QFileDialog.AcceptMode.AcceptSave)
+        dialog.setDefaultSuffix(SUFFIX.removeprefix("."))
+        if self._document.path is not None:
+            dialog.selectFile(self._document.path.name)
+        dialog.fileSelected.connect(lambda path: self._write(Path(path), then))
+        dialog.open()
+
+    def _write(self, path: Path, then: Then | None, *, overwrite: bool = False) -> None:
+        try:
+            self._document.save(path, overwrite=overwrite)
+        except FileChangedError:
+            ask(
+                self._window,
+                f"{path.name} was changed by another program since it was opened.",
+                "Overwriting keeps the other version as one backup beside it.",
+                (
+                    ("Save as…", lambda: self.save_as(then)),
+                    ("Overwrite", lambda: self._write(path, then, overwrite=True)),
+                    ("Cancel", None),
+                ),
+            )
+        except InputError as error:
+            self._tell("The model was not saved.", error)
+        else:
+            self._remember(path)
+            if then is not None:
+                then()
+
+    def _tell(self, text: str, error: InputError) -> None:
+        ask(self._window, text, str(error), (("Close", None),))
+
+    def _file_dialog(self, title: str, mode: QFileDialog.AcceptMode) -> QFileDialog:
+        dialog = QFileDialog(self._window, title, self._settings.get(names.FOLDER), _FILTER)
+        dialog.setAcceptMode(mode)
+        dialog.setAttribute(Qt.WidgetAttribute.WA_DeleteOnClose)
+        return dialog

@@ -1,0 +1,160 @@
+"""How one found mode is painted in the list: frequency, small picture, energy shares."""
+
+from typing import Any
+
+from PySide6.QtCore import QModelIndex, QObject, QPersistentModelIndex, QRectF, QSize, Qt
+from PySide6.QtGui import QColor, QFont, QFontMetricsF, QPainter, QPen
+from PySide6.QtWidgets import QStyle, QStyledItemDelegate, QStyleOptionViewItem
+
+from modalview.model.parts import Model
+from modalview.ui.canvas import paint_drawing
+from modalview.ui.modelist import ModeList, frequency_text, percent, range_text
+from modalview.ui.symbols import IN_BAND, paint_sign
+from modalview.ui.theme import LIGHT, Theme
+
+_GAP = 8.0
+_RADIUS = 6.0
+_BARS = 3
+_LEFT = Qt.AlignmentFlag.AlignLeft | Qt.AlignmentFlag.AlignVCenter
+_RIGHT = Qt.AlignmentFlag.AlignRight | Qt.AlignmentFlag.AlignVCenter
+
+
+class ModeCard(QStyledItemDelegate):
+    """Paints a card; the small pictures are laid out once per model and size of card."""
+
+    def __init__(self, parent: QObject | None = None) -> None:
+        super().__init__(parent)
+        self._theme: Theme = LIGHT
+        self._model: Model | None = None
+        self._height = 190
+        self.factor = 1.0  # where the small pictures stand in their swing, -1..1
+        self._small: Any = None
+        self._small_size = (0, 0)
+        self._posed: dict[int, Any] = {}
+
+    def set_theme(self, theme: Theme) -> None:
+        """Paint in other colours from now on."""
+        self._theme = theme
+
+    def set_model(self, model: Model | None) -> None:
+        """Draw the small pictures of another model."""
+        self._model, self._small = model, None
+        self._posed = {}
+
+    def set_height(self, height: int) -> None:
+        """Make the cards as tall as the list."""
+        self._height = height
+
+    def sizeHint(self, option: QStyleOptionViewItem, index: Any) -> QSize:  # noqa: N802  (Qt's name)
+        """Return the size of a card; it follows the text size."""
+        del index
+        return QSize(round(18.5 * option.fontMetrics.height()), self._height)
+
+    def paint(
+        self, painter: QPainter, option: QStyleOptionViewItem, index: QModelIndex | QPersistentModelIndex
+    ) -> None:
+        """Paint one card."""
+        mode = index.data(ModeList.ModeRole)
+        band = index.data(ModeList.BandRole)
+        painter.save()
+        painter.setRenderHint(QPainter.RenderHint.Antialiasing)
+        box = QRectF(option.rect).adjusted(2, 2, -_GAP, -2)
+        self._paint_frame(painter, box, option.state)
+        if not index.data(ModeList.CurrentRole):
+            painter.setOpacity(0.55)
+        inner = box.adjusted(10, 7, -10, -7)
+        below = self._paint_head(painter, inner, mode, band)
+        above = self._paint_shares(painter, inner, mode)
+        self._paint_picture(painter, QRectF(inner.left(), below, inner.width(), above - below), mode)
+        painter.restore()
+
+    def _paint_frame(self, painter: QPainter, box: QRectF, state: Any) -> None:
+        chosen = bool(state & QStyle.StateFlag.State_Selected)
+        focus = bool(state & QStyle.StateFlag.State_HasFocus)
+        painter.setBrush(QColor(self._theme.card))
+        pen = QPen(QColor(self._theme.accent if chosen else self._theme.line), 2.0 if chosen else 1.0)
+        painter.setPen(pen)
+        painter.drawRoundedRect(box, _RADIUS, _RADIUS)
+        if focus:
+            painter.setBrush(Qt.BrushStyle.NoBrush)
+            painter.setPen(QPen(QColor(self._theme.accent), 1.0, Qt.PenStyle.DotLine))
+            painter.drawRoundedRect(box.adjusted(3, 3, -3, -3), _RADIUS - 2, _RADIUS - 2)
+
+    def _paint_head(self, painter: QPainter, inner: QRectF, mode: Any, band: str | None) -> float:
+        """Paint frequency, range and name; return where they end."""
+        bold = QFont(painter.font())
+        bold.setBold(True)
+        metrics = QFontMetricsF(bold)
+        line = metrics.height()
+        head = QRectF(inner.left(), inner.top(), inner.width(), line)
+        left = head
+        if band is not None:
+            paint_sign(painter, QRectF(head.left(), head.top() + 1, line - 2, line - 2), IN_BAND, self._theme)
+            left = head.adjusted(line + 4, 0, 0, 0)
+        text = f"{mode.number}  {frequency_text(mode)}"
+        self._write(painter, left, text, self._theme.in_band if band else self._theme.ink, font=bold)
+        room = left.adjusted(metrics.horizontalAdvance(text) + 8, 0, 0, 0)
+        self._write(painter, room, range_text(mode), self._theme.quiet, align=_RIGHT)
+        self._write(painter, head.translated(0, line + 1), mode.name, self._theme.ink)
+        return inner.top() + 2 * line + 4
+
+    def _paint_shares(self, painter: QPainter, inner: QRectF, mode: Any) -> float:
+        """Paint the three largest strain shares and the leading mass from the bottom; return their top."""
+        small = QFont(painter.font())
+        small.setPointSizeF(0.88 * small.pointSizeF())
+        line = QFontMetricsF(small).height()
+        shares = mode.strain[:_BARS] if mode.kind == "elastic" else ()
+        top = inner.bottom() - line * (1 + len(shares))
+        for row, share in enumerate(shares):
+            self._paint_bar(painter, QRectF(inner.left(), top + row * line, inner.width(), line), share, small)
+        if mode.kinetic:
+            lead = mode.kinetic[0]
+            place = QRectF(inner.left(), inner.bottom() - line, inner.width(), line)
+            text = f"moving mass: {lead.label} {percent(lead.fraction)}"
+            self._write(painter, place, text, self._theme.quiet, font=small)
+        return top - 2
+
+    def _paint_bar(self, painter: QPainter, row: QRectF, share: Any, font: QFont) -> None:
+        metrics = QFontMetricsF(font)
+        label = 0.46 * row.width()
+        figure = metrics.horizontalAdvance("100 %") + 4
+        self._write(painter, QRectF(row.left(), row.top(), label, row.height()), share.label, self._theme.quiet, font)
+        track = QRectF(row.left() + label + 6, row.center().y() - 3, row.width() - label - figure - 6, 6)
+        painter.fillRect(track, QColor(self._theme.line))
+        painter.fillRect(
+            QRectF(track.topLeft(), track.bottomRight()).adjusted(0, 0, -track.width() * (1 - share.fraction), 0),
+            QColor(self._theme.accent),
+        )
+        self._write(painter, row, percent(share.fraction), self._theme.quiet, font, _RIGHT)
+
+    def _paint_picture(self, painter: QPainter, place: QRectF, mode: Any) -> None:
+        if place.height() < 24 or self._model is None:
+            return
+        from modalview.drawing import modepicture, motion  # noqa: PLC0415  (numpy comes after the first paint)
+
+        size = (round(place.width()), round(place.height()))
+        if self._small is None or size != self._small_size:
+            self._small = modepicture.mode_geometry(self._model, *size)
+            self._small_size, self._posed = size, {}
+        posed = self._posed.get(mode.number)
+        if posed is None:
+            posed = self._posed[mode.number] = motion.pose(self._small, mode.motion)
+        painter.translate(place.topLeft())
+        paint_drawing(painter, modepicture.mode_picture(self._small, posed, self.factor), self._theme)
+        painter.translate(-place.topLeft())
+
+    @staticmethod
+    def _write(  # noqa: PLR0913  (a text has a place, a colour, a font and a side)
+        painter: QPainter,
+        place: QRectF,
+        text: str,
+        colour: str,
+        font: QFont | None = None,
+        align: Qt.AlignmentFlag = _LEFT,
+    ) -> None:
+        kept = painter.font()
+        painter.setFont(font or kept)
+        painter.setPen(QColor(colour))
+        shown = painter.fontMetrics().elidedText(text, Qt.TextElideMode.ElideRight, int(place.width()))
+        painter.drawText(place, align, shown)
+        painter.setFont(kept)

@@ -1,0 +1,144 @@
+"""The found modes as a list: what each says, in the order of their numbers."""
+
+from typing import Any
+
+from PySide6.QtCore import QAbstractListModel, QModelIndex, QObject, QPersistentModelIndex, Qt
+
+from modalview.units.show import shown_digits, significant
+
+_Index = QModelIndex | QPersistentModelIndex
+# Digits in the list; all that the error leaves stand in the tool tip.
+LIST_DIGITS = 4
+
+
+def frequency_text(mode: Any) -> str:
+    """Return a mode's frequency as shown, fewer digits where its numerical error demands.
+
+    >>> from types import SimpleNamespace as Mode
+    >>> frequency_text(Mode(kind="elastic", frequency_hz=51.2603, numerical_error_hz=1e-13))
+    '51.26 Hz'
+    >>> frequency_text(Mode(kind="rigid-body", frequency_hz=0.0, numerical_error_hz=0.0))
+    '0 Hz'
+    """
+    if mode.kind == "rigid-body":
+        return "0 Hz"
+    if mode.kind == "unstable":
+        return "unstable"
+    digits = min(LIST_DIGITS, shown_digits(mode.frequency_hz, mode.numerical_error_hz))
+    return f"{significant(mode.frequency_hz, digits)} Hz"
+
+
+def range_text(mode: Any) -> str:
+    """Return the range over all tolerances, or what stands in its place.
+
+    >>> from types import SimpleNamespace as Mode
+    >>> range_text(Mode(kind="elastic", frequency_hz=51.26, range_hz=(44.12, 57.84)))
+    '44.12 to 57.84'
+    """
+    if mode.kind == "rigid-body":
+        return "rigid-body mode"
+    if mode.kind == "unstable":
+        return ""
+    low, high = mode.range_hz
+    if low == high:
+        return "no tolerance"
+    return f"{significant(low, LIST_DIGITS)} to {significant(high, LIST_DIGITS)}"
+
+
+def percent(fraction: float) -> str:
+    """Return a share in per cent.
+
+    >>> percent(0.897), percent(0.0004)
+    ('90 %', '0 %')
+    """
+    return f"{100 * fraction:.0f} %"
+
+
+def details(mode: Any) -> str:
+    """Return all that is known of a mode, for the tool tip."""
+    lines = [f"Mode {mode.number}: {mode.name}"]
+    if mode.kind == "elastic":
+        low, high = mode.range_hz
+        lines += [
+            f"{mode.frequency_hz!r} Hz, numerical error at most {mode.numerical_error_hz:.1e} Hz",
+            f"over all tolerances {significant(low, 5)} to {significant(high, 5)} Hz",
+        ]
+    if len(mode.repeated_with) > 1:
+        lines.append(f"one frequency with modes {', '.join(str(n) for n in mode.repeated_with)}")
+    lines += [f"strain energy, {one.label}: {percent(one.fraction)}" for one in mode.strain[:5]]
+    lines += [f"kinetic energy, {one.label}: {percent(one.fraction)}" for one in mode.kinetic[:5]]
+    return "\n".join(lines)
+
+
+def spoken(mode: Any, *, current: bool) -> str:
+    """Return a mode in one line, for those who hear the window."""
+    shares = ", ".join(f"{one.label} {percent(one.fraction)}" for one in mode.strain[:3])
+    old = "" if current else " (of an older model)"
+    return f"Mode {mode.number}{old}: {frequency_text(mode)}, {range_text(mode)}, {mode.name}. {shares}"
+
+
+class ModeList(QAbstractListModel):
+    """The modes of a solution; ``ModeRole`` gives the mode itself, ``BandRole`` the check it lies in."""
+
+    ModeRole = Qt.ItemDataRole.UserRole
+    BandRole = Qt.ItemDataRole.UserRole + 1
+    CurrentRole = Qt.ItemDataRole.UserRole + 2
+
+    def __init__(self, parent: QObject | None = None) -> None:
+        super().__init__(parent)
+        self._modes: tuple[Any, ...] = ()
+        self._in_band: dict[int, str] = {}
+        self._current = True
+
+    def show_solution(self, solution: Any, *, current: bool) -> None:
+        """Show the modes of a study.Solution; None shows none."""
+        self.beginResetModel()
+        self._modes = () if solution is None else solution.modes
+        self._in_band = {} if solution is None else _modes_in_band(solution)
+        self._current = current
+        self.endResetModel()
+
+    def set_current(self, current: bool) -> None:  # noqa: FBT001  (one word, one meaning)
+        """Mark the modes as those of the model on the sheet, or of an older one."""
+        if current != self._current and self._modes:
+            self._current = current
+            self.dataChanged.emit(self.index(0), self.index(len(self._modes) - 1))
+
+    def mode(self, row: int) -> Any:
+        """Return the mode of a row, or None."""
+        return self._modes[row] if 0 <= row < len(self._modes) else None
+
+    def rowCount(self, parent: _Index = QModelIndex()) -> int:  # noqa: N802, B008  (Qt's)
+        """Return the number of modes."""
+        return 0 if parent.isValid() else len(self._modes)
+
+    def data(self, index: _Index, role: int = Qt.ItemDataRole.DisplayRole) -> Any:
+        """Return what a row shows or says."""
+        mode = self.mode(index.row())
+        if mode is None:
+            return None
+        answers = {
+            self.ModeRole: lambda: mode,
+            self.BandRole: lambda: self._in_band.get(mode.number),
+            self.CurrentRole: lambda: self._current,
+            Qt.ItemDataRole.DisplayRole: lambda: f"{mode.number} {frequency_text(mode)}",
+            Qt.ItemDataRole.ToolTipRole: lambda: details(mode),
+            Qt.ItemDataRole.AccessibleTextRole: lambda: spoken(mode, current=self._current),
+        }
+        answer = answers.get(role)
+        return answer() if answer else None
+
+
+def _modes_in_band(solution: Any) -> dict[int, str]:
+    """Return the label of the check in whose band each mode lies at nominal values."""
+    found: dict[int, str] = {}
+    bands = [check.band for check in solution.checks if check.inside]
+    for mode in solution.modes:
+        for band in bands:
+            low, high = (edge / _TURN for edge in band.nominal)
+            if mode.kind == "elastic" and low <= mode.frequency_hz <= high:
+                found.setdefault(mode.number, band.label)
+    return found
+
+
+_TURN = 6.283185307179586  # rad of one turn

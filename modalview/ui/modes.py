@@ -1,0 +1,159 @@
+"""The row of found modes under the sheet; the chosen one moves there."""
+
+import math
+from typing import Any
+
+from PySide6.QtCore import QElapsedTimer, QModelIndex, Qt, QTimer, Signal
+from PySide6.QtGui import QResizeEvent
+from PySide6.QtWidgets import QAbstractItemView, QFrame, QLabel, QListView, QStackedLayout, QWidget
+
+from modalview.model.parts import Model
+from modalview.ui.analysis import Analysis
+from modalview.ui.modecard import ModeCard
+from modalview.ui.modelist import ModeList
+from modalview.ui.theme import Theme
+
+# The small pictures need no more than half the frames of the sheet.
+FRAME_MS = 33
+SWING_S = 1.6
+
+
+class ModeRow(QListView):
+    """Cards side by side; arrow keys choose."""
+
+    mode_chosen = Signal(object)  # study.FoundMode or None
+
+    def __init__(self, parent: QWidget | None = None) -> None:
+        super().__init__(parent)
+        self.modes = ModeList(self)
+        self.card = ModeCard(self)
+        self.setModel(self.modes)
+        self.setItemDelegate(self.card)
+        self.setObjectName("modeRow")
+        self.setAccessibleName("Modes found")
+        self.setFlow(QListView.Flow.LeftToRight)
+        self.setWrapping(False)
+        self.setUniformItemSizes(True)
+        self.setFrameShape(QFrame.Shape.NoFrame)
+        self.setSelectionMode(QAbstractItemView.SelectionMode.SingleSelection)
+        self.setHorizontalScrollMode(QAbstractItemView.ScrollMode.ScrollPerPixel)
+        self.setVerticalScrollBarPolicy(Qt.ScrollBarPolicy.ScrollBarAlwaysOff)
+        self.selectionModel().currentChanged.connect(self._on_current_changed)
+        self._phase_s = 0.0
+        self._clock = QElapsedTimer()
+        self._timer = QTimer(self, interval=FRAME_MS)
+        self._timer.timeout.connect(self._on_frame)
+
+    def chosen(self) -> Any:
+        """Return the chosen mode, or None."""
+        return self.modes.mode(self.currentIndex().row())
+
+    def choose(self, row: int) -> None:
+        """Choose the mode of a row, as far as there is one."""
+        if 0 <= row < self.modes.rowCount():
+            self.setCurrentIndex(self.modes.index(row))
+
+    def step(self, by: int) -> None:
+        """Choose the next or the previous mode, round the end."""
+        count = self.modes.rowCount()
+        if count:
+            self.choose((self.currentIndex().row() + by) % count)
+
+    def set_moving(self, moving: bool) -> None:  # noqa: FBT001  (a slot)
+        """Move the small pictures, or show them at their largest."""
+        if moving:
+            self._clock.start()
+            self._timer.start()
+        else:
+            self._timer.stop()
+            self.card.factor = 1.0
+            self.viewport().update()
+
+    def _on_frame(self) -> None:
+        self._phase_s += self._clock.restart() / 1000
+        if self.isVisible() and self.modes.rowCount():
+            self.card.factor = math.sin(2 * math.pi * self._phase_s / SWING_S)
+            self.viewport().update()
+
+    def _on_current_changed(self, current: QModelIndex) -> None:
+        self.mode_chosen.emit(self.modes.mode(current.row()))
+
+    def resizeEvent(self, event: QResizeEvent) -> None:  # noqa: N802  (Qt's name)
+        """Make the cards as tall as the row, its scroll bar left out."""
+        super().resizeEvent(event)
+        self.fit_cards()
+
+    def fit_cards(self) -> None:
+        """Lay the cards out for the height and the text size of now."""
+        bar = self.horizontalScrollBar().sizeHint().height()
+        self.card.set_height(max(self.height() - bar - 2, 60))
+        self.scheduleDelayedItemsLayout()
+
+
+class Modes(QWidget):
+    """The row, or one sentence where no modes are found yet."""
+
+    mode_chosen = Signal(object)
+
+    def __init__(self, parent: QWidget | None = None) -> None:
+        super().__init__(parent)
+        self.row = ModeRow(self)
+        self.row.mode_chosen.connect(self.mode_chosen)
+        self.invitation = QLabel(self)
+        self.invitation.setWordWrap(True)
+        self.invitation.setAlignment(Qt.AlignmentFlag.AlignCenter)
+        self.invitation.setProperty("role", "quiet")
+        self._stack = QStackedLayout(self)
+        self._stack.addWidget(self.invitation)
+        self._stack.addWidget(self.row)
+
+    def set_theme(self, theme: Theme) -> None:
+        """Repaint the cards."""
+        self.row.card.set_theme(theme)
+        self.row.fit_cards()
+        self.row.viewport().update()
+
+    def show_analysis(self, analysis: Analysis) -> None:
+        """Show the modes that are found; those of an older model are pale until found again."""
+        solution = analysis.solution
+        if solution is None:
+            self.row.modes.show_solution(None, current=True)
+            self.invitation.setText(_invitation(analysis))
+            self._stack.setCurrentWidget(self.invitation)
+            self.mode_chosen.emit(None)
+            return
+        self._stack.setCurrentWidget(self.row)
+        if analysis.solution_current:
+            self._show_found(solution)
+        else:
+            self.row.modes.set_current(False)
+
+    def _show_found(self, solution: Any) -> None:
+        row = max(self.row.currentIndex().row(), 0)
+        self.row.card.set_model(_model_of(solution))
+        self.row.modes.show_solution(solution, current=True)
+        self.row.choose(min(row, len(solution.modes) - 1))
+
+
+def _model_of(solution: Any) -> Model:
+    return solution.outlook.request.model
+
+
+def _invitation(analysis: Analysis) -> str:
+    if analysis.finding:
+        return "Finding the modes…"
+    if analysis.outlook is None:
+        return ""
+    return (
+        "What the scale and the verdict say is proven without them. "
+        "Find modes (Ctrl+Enter) adds which mode lies where, how it moves and what governs it."
+    )
+
+
+def evidence(analysis: Analysis) -> str:
+    """Return why the modes shown can be believed, or that they are of an older model."""
+    if analysis.solution is None:
+        return ""
+    if not analysis.solution_current:
+        return "Out of date: these modes are of the model before the last edit"
+    return " · ".join(analysis.solution.evidence)

@@ -1,0 +1,105 @@
+"""A picture of the whole window, made without a screen: for the README and for looking at what was built."""
+
+import tempfile
+import time
+from collections.abc import Callable
+from dataclasses import dataclass
+from pathlib import Path
+
+from PySide6.QtCore import QSettings, QThread
+from PySide6.QtWidgets import QApplication
+
+from modalview.errors import InputError
+from modalview.ui import settings as names
+from modalview.ui.app import application, new_window
+from modalview.ui.settings import Settings
+from modalview.ui.window import Window
+
+_PATIENCE_S = 120.0
+
+
+@dataclass(frozen=True, slots=True)
+class Look:
+    """How the window stands in the picture.
+
+    Parameters
+    ----------
+    width, height : int
+        Pixels.
+    theme : str
+        "light" or "dark".
+    mode : int or None
+        Number of the mode on the sheet, standing at its largest; None takes the first.
+    automatic : bool
+        Whether modes are found after opening.
+    values : bool
+        Whether the values are shown in the place of the modes.
+    text_percent : int
+        Size of text.
+    """
+
+    width: int = 1280
+    height: int = 800
+    theme: str = "light"
+    mode: int | None = None
+    automatic: bool = True
+    values: bool = False
+    text_percent: int = 100
+
+
+def window_picture(file: Path | None, path: Path, look: Look) -> None:
+    """Save a picture of the window with a model open, or empty without one.
+
+    Raises
+    ------
+    InputError
+        When the file cannot be used or the picture cannot be written.
+    """
+    program = application()
+    with tempfile.TemporaryDirectory() as folder:
+        window = new_window(_settings(Path(folder), look))
+        try:
+            window.resize(look.width, look.height)
+            window.show()
+            if file is not None:
+                window.document.open(file, example=True)
+                _wait(program, lambda: _settled(window))
+                _arrange(window, look)
+            _wait(program, lambda: True)
+            if not window.grab().save(str(path)):
+                raise InputError(f"{path} cannot be written as a picture; is the folder there?")
+        finally:
+            window.close()
+            program.processEvents()
+
+
+def _settings(folder: Path, look: Look) -> Settings:
+    settings = Settings(QSettings(str(folder / "look.ini"), QSettings.Format.IniFormat))
+    settings.set(names.THEME, look.theme)
+    settings.set(names.AUTOMATIC, look.automatic)
+    settings.set(names.TEXT_SIZE, look.text_percent)
+    settings.set(names.MOVE, False)
+    return settings
+
+
+def _settled(window: Window) -> bool:
+    known = window.analysis.outlook is not None or window.analysis.refusal is not None
+    return known and not window.analysis.looking and not window.analysis.finding
+
+
+def _arrange(window: Window, look: Look) -> None:
+    if look.mode is not None:
+        window.modes.row.choose(look.mode - 1)
+    if look.values:
+        window.on_go_to_values()
+
+
+def _wait(program: QApplication, ready: Callable[[], bool]) -> None:
+    """Let the program work until it is ready, and a little longer for layouts to settle."""
+    end = time.monotonic() + _PATIENCE_S
+    while not ready() and time.monotonic() < end:
+        program.processEvents()
+        QThread.msleep(5)
+    for _ in range(10):
+        program.processEvents()
+        QThread.msleep(5)

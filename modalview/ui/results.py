@@ -1,0 +1,150 @@
+"""The right column: machines and their speeds, orders checked, what was not checked, notes."""
+
+from typing import Any
+
+from PySide6.QtCore import Qt
+from PySide6.QtWidgets import QFrame, QLabel, QScrollArea, QSizePolicy, QVBoxLayout, QWidget
+
+from modalview.model.parts import Machine, Model
+from modalview.ui.analysis import Analysis
+from modalview.ui.checkcard import CheckCard
+from modalview.ui.document import Document
+from modalview.ui.entry import EntryField
+from modalview.ui.theme import LIGHT, Theme
+from modalview.ui.values import ValueRow, machine_rows
+
+
+def _heading(text: str, parent: QWidget) -> QLabel:
+    label = QLabel(text, parent)
+    label.setProperty("role", "heading")
+    label.setWordWrap(True)
+    return label
+
+
+class MachineForm(QFrame):
+    """Speed and margin of one machine, edited in place."""
+
+    def __init__(self, machine: Machine, document: Document, parent: QWidget | None = None) -> None:
+        super().__init__(parent)
+        self._document = document
+        self._layout = QVBoxLayout(self)
+        self._layout.setContentsMargins(0, 0, 0, 6)
+        self._layout.setSpacing(4)
+        self._layout.addWidget(_heading(f"Machine: {machine.name or machine.id}", self))
+        self.fields: dict[tuple[str | int, ...], EntryField] = {}
+
+    def show_rows(self, rows: list[ValueRow]) -> None:
+        """Show the values; fields are kept while the machine has the same ones."""
+        if [row.address for row in rows] != list(self.fields):
+            self._rebuild(rows)
+        for row in rows:
+            self.fields[row.address].show_value(row.text, row.converted)
+
+    def _rebuild(self, rows: list[ValueRow]) -> None:
+        for old in self.fields.values():
+            self._layout.removeWidget(old)
+            old.deleteLater()
+        self.fields = {row.address: self._field(row) for row in rows}
+        width = max(one.label.sizeHint().width() for one in self.fields.values()) if self.fields else 0
+        for field in self.fields.values():
+            field.label.setMinimumWidth(width)
+
+    def _field(self, row: ValueRow) -> EntryField:
+        field = EntryField(row.what, lambda text: self._document.type_value(row.address, text), self)
+        self._layout.addWidget(field)
+        return field
+
+
+class Results(QScrollArea):
+    """The column; a long one scrolls."""
+
+    def __init__(self, document: Document, analysis: Analysis, parent: QWidget | None = None) -> None:
+        super().__init__(parent)
+        self._document, self._analysis = document, analysis
+        self._theme: Theme = LIGHT
+        self._machines: dict[str, MachineForm] = {}
+        self._cards: list[CheckCard] = []
+        self.setObjectName("results")
+        self.setWidgetResizable(True)
+        self.setHorizontalScrollBarPolicy(Qt.ScrollBarPolicy.ScrollBarAlwaysOff)
+        self.setFrameShape(QFrame.Shape.NoFrame)
+        self._inside = QWidget(self)
+        self._inside.setObjectName("resultsInside")
+        self._column = QVBoxLayout(self._inside)
+        self._column.setContentsMargins(14, 10, 12, 10)
+        self._column.setSpacing(6)
+        self._forms = self._part()
+        self._heading = _heading("Orders checked", self._inside)
+        self._column.addWidget(self._heading)
+        self._checks = self._part()
+        self.not_checked = self._words("Not checked")
+        self.notes = self._words("Notes on the model")
+        self.story = self._words("About this model")
+        self._column.addStretch(1)
+        self.setWidget(self._inside)
+
+    def _part(self) -> QVBoxLayout:
+        part = QVBoxLayout()
+        part.setSpacing(6)
+        self._column.addLayout(part)
+        return part
+
+    def _words(self, heading: str) -> QLabel:
+        title = _heading(heading, self._inside)
+        words = QLabel(self._inside)
+        words.setWordWrap(True)
+        words.setProperty("role", "small")
+        words.setTextInteractionFlags(Qt.TextInteractionFlag.TextSelectableByMouse)
+        words.setAccessibleName(heading)
+        words.setSizePolicy(QSizePolicy.Policy.Preferred, QSizePolicy.Policy.Minimum)
+        title.setBuddy(words)
+        self._column.addWidget(title)
+        self._column.addWidget(words)
+        words.setProperty("title", title)
+        return words
+
+    def set_theme(self, theme: Theme) -> None:
+        """Repaint the signs."""
+        self._theme = theme
+        self.show_results()
+
+    def show_model(self, model: Model) -> None:
+        """Show the machines and the story of a model."""
+        for gone in set(self._machines) - {machine.id for machine in model.machines}:
+            self._machines.pop(gone).deleteLater()
+        for machine in model.machines:
+            if machine.id not in self._machines:
+                form = self._machines[machine.id] = MachineForm(machine, self._document, self._inside)
+                self._forms.addWidget(form)
+            self._machines[machine.id].show_rows(machine_rows(model, machine))
+        _say(self.story, (model.notes,) if model.notes else ())
+
+    def forget_machines(self) -> None:
+        """Start anew for another model: refused entries of the old one go."""
+        for form in self._machines.values():
+            form.deleteLater()
+        self._machines.clear()
+
+    def show_results(self) -> None:
+        """Show the checks: with their nearest modes once these are found."""
+        current = self._analysis.solution_current
+        known: Any = self._analysis.solution if current else self._analysis.outlook
+        checks = known.checks if known is not None else ()
+        self._heading.setVisible(bool(checks))
+        while len(self._cards) < len(checks):
+            card = CheckCard(self._inside)
+            self._cards.append(card)
+            self._checks.addWidget(card)
+        for card, check in zip(self._cards, checks, strict=False):
+            card.show_check(check, self._theme, current=current)
+        for number, card in enumerate(self._cards):
+            card.setVisible(number < len(checks))
+        outlook = self._analysis.outlook
+        _say(self.not_checked, outlook.not_checked if outlook else ())
+        _say(self.notes, outlook.notes if outlook else ())
+
+
+def _say(label: QLabel, lines: tuple[str, ...]) -> None:
+    label.setText("\n".join(lines) if len(lines) < 2 else "\n".join(f"· {line}" for line in lines))
+    label.setVisible(bool(lines))
+    label.property("title").setVisible(bool(lines))

@@ -1,0 +1,259 @@
+"""The sheet: the model as an engineering drawing, on which the chosen mode moves."""
+
+import math
+from typing import Any
+
+from PySide6.QtCore import QElapsedTimer, QPoint, QPointF, Qt, QTimer, Signal
+from PySide6.QtGui import QKeyEvent, QMouseEvent, QPainter, QPaintEvent, QPixmap, QResizeEvent, QWheelEvent
+from PySide6.QtWidgets import QSizePolicy, QWidget
+
+from modalview.model.parts import Model
+from modalview.ui.canvas import paint_drawing, painted
+from modalview.ui.theme import LIGHT, Theme
+
+FRAME_MS = 16
+# Real frequencies are too fast to follow; every mode swings once in this time.
+SWING_S = 1.6
+# One notch of a wheel (120 units of an eighth of a degree) enlarges by so much.
+ZOOM_PER_NOTCH = 1.2
+_PAN_STEP_PX = 40
+
+
+class Sheet(QWidget):
+    """Paints cached pictures of the model; a frame of the moving mode only adds what moves."""
+
+    part_chosen = Signal(str)
+    resized = Signal()
+
+    def __init__(self, parent: QWidget | None = None) -> None:
+        super().__init__(parent)
+        self._model: Model | None = None
+        self._view: Any = None
+        self._geometry: Any = None
+        self._title: Any = None
+        self._mode: Any = None
+        self._posed: Any = None
+        self._rest: QPixmap | None = None
+        self._theme: Theme = LIGHT
+        self._text_scale = 1.0
+        self._selected: str | None = None
+        self._moving = True
+        self.amplitude = 0.6
+        self._phase_s = 0.0
+        self._clock = QElapsedTimer()
+        self._timer = QTimer(self, interval=FRAME_MS, timerType=Qt.TimerType.PreciseTimer)
+        self._timer.timeout.connect(self._on_frame)
+        self._drag: QPoint | None = None
+        self._space = False
+        self.setMinimumSize(320, 200)
+        self.setSizePolicy(QSizePolicy.Policy.Expanding, QSizePolicy.Policy.Expanding)
+        self.setFocusPolicy(Qt.FocusPolicy.StrongFocus)
+        self.setAccessibleName("Sheet with the drawing of the model")
+
+    # What is shown
+
+    def show_model(self, model: Model, *, fit: bool = False) -> None:
+        """Draw a model; ``fit`` drops the zoom that was chosen for another one."""
+        from modalview.drawing import furniture  # noqa: PLC0415  (numpy comes after the first paint)
+
+        self._model, self._title = model, furniture.title_lines(model)
+        if fit:
+            self._view = None
+            self._selected = None
+        self._rebuild()
+
+    def show_title(self, title: Any) -> None:
+        """Fill the title block (drawing.furniture.TitleLines)."""
+        if title != self._title:
+            self._title, self._rest = title, None
+            self.update()
+
+    def show_mode(self, mode: Any) -> None:
+        """Let a mode (study.FoundMode) move on the sheet; None shows the model at rest."""
+        self._mode = mode
+        self._phase_s = 0.0
+        self._rebuild()
+
+    def set_theme(self, theme: Theme, text_scale: float) -> None:
+        """Repaint in other colours and text size."""
+        self._theme, self._text_scale = theme, text_scale
+        self._rebuild()
+
+    def set_moving(self, moving: bool) -> None:  # noqa: FBT001  (a slot)
+        """Move, or stand still at the largest motion with arrows."""
+        self._moving = moving
+        self._run()
+        self.update()
+
+    def set_amplitude(self, share: float) -> None:
+        """Set how far the mode moves, 0..1."""
+        self.amplitude = share
+        self.update()
+
+    def select(self, part: str | None) -> None:
+        """Mark a part."""
+        if part != self._selected:
+            self._selected = part
+            self._rest = None
+            self.update()
+
+    def fit(self) -> None:
+        """Show the whole model."""
+        self._view = None
+        self._rebuild()
+
+    def zoom(self, factor: float, at: QPointF | None = None) -> None:
+        """Enlarge about a point of the sheet."""
+        if self._geometry is not None:
+            at = at or QPointF(self.rect().center())
+            self._view = self._geometry.view.zoomed(factor, at.x(), at.y())
+            self._rebuild()
+
+    def pan(self, dx: float, dy: float) -> None:
+        """Move the drawing by so many pixels."""
+        if self._geometry is not None:
+            self._view = self._geometry.view.panned(dx, dy)
+            self._rebuild()
+
+    # Building
+
+    def _rebuild(self) -> None:
+        from modalview.drawing import motion, sheet  # noqa: PLC0415  (numpy comes after the first paint)
+
+        self._rest = self._posed = None
+        if self._model is not None and self.width() > 0:
+            self._geometry = sheet.sheet_geometry(
+                self._model, self.width(), self.height(), text_scale=self._text_scale, view=self._view
+            )
+            if self._mode is not None:
+                self._posed = motion.pose(self._geometry, self._mode.motion)
+        self._run()
+        self.update()
+
+    def _run(self) -> None:
+        run = self._moving and self._posed is not None and self.isVisible()
+        if run and not self._timer.isActive():
+            self._clock.start()
+            self._timer.start()
+        elif not run:
+            self._timer.stop()
+
+    def _on_frame(self) -> None:
+        self._phase_s += self._clock.restart() / 1000
+        self.update()
+
+    def _rest_pixmap(self) -> QPixmap:
+        from modalview.drawing import motion, sheet  # noqa: PLC0415  (see above)
+
+        if self._posed is not None:
+            drawing = motion.still_drawing(self._geometry, self._title)
+        else:
+            drawing = sheet.sheet_drawing(self._geometry, self._title, selected=self._selected)
+        return painted(drawing, self, self._theme)
+
+    def paintEvent(self, event: QPaintEvent) -> None:  # noqa: N802  (Qt's name)
+        """Paint the cached sheet and, over it, the frame of the moving mode."""
+        del event
+        painter = QPainter(self)
+        if self._geometry is None:
+            return
+        if self._rest is None:
+            self._rest = self._rest_pixmap()
+        painter.drawPixmap(0, 0, self._rest)
+        if self._posed is not None:
+            paint_drawing(painter, self.moving_drawing(), self._theme)
+
+    def moving_drawing(self) -> Any:
+        """Return the frame of this moment: moving, or frozen with arrows."""
+        from modalview.drawing import motion  # noqa: PLC0415  (see above)
+
+        if not self._moving:
+            return motion.frozen(self._geometry, self._posed, self.amplitude)
+        swing = math.sin(2 * math.pi * self._phase_s / SWING_S)
+        return motion.frame(self._geometry, self._posed, self.amplitude * swing)
+
+    # What a person does
+
+    def resizeEvent(self, event: QResizeEvent) -> None:  # noqa: N802  (Qt's name)
+        """Fit to the new size."""
+        super().resizeEvent(event)
+        if self._model is not None:
+            self._rebuild()
+        self.resized.emit()
+
+    def showEvent(self, event: Any) -> None:  # noqa: N802  (Qt's name)
+        """Move again."""
+        super().showEvent(event)
+        self._run()
+
+    def hideEvent(self, event: Any) -> None:  # noqa: N802  (Qt's name)
+        """Do not move unseen."""
+        super().hideEvent(event)
+        self._timer.stop()
+
+    def wheelEvent(self, event: QWheelEvent) -> None:  # noqa: N802  (Qt's name)
+        """Zoom about the pointer."""
+        notches = event.angleDelta().y() / 120
+        if notches:
+            self.zoom(ZOOM_PER_NOTCH**notches, event.position())
+
+    def mousePressEvent(self, event: QMouseEvent) -> None:  # noqa: N802  (Qt's name)
+        """Begin to pan, or choose the part under the pointer."""
+        self.setFocus()
+        middle = event.button() == Qt.MouseButton.MiddleButton
+        if middle or (self._space and event.button() == Qt.MouseButton.LeftButton):
+            self._drag = event.position().toPoint()
+            self.setCursor(Qt.CursorShape.ClosedHandCursor)
+        elif event.button() == Qt.MouseButton.LeftButton and self._geometry is not None:
+            self._choose(event.position())
+
+    def _choose(self, at: QPointF) -> None:
+        from modalview.drawing import sheet  # noqa: PLC0415  (see above)
+
+        part = sheet.part_at(self._geometry, at.x(), at.y())
+        self.select(part)
+        if part is not None:
+            self.part_chosen.emit(part)
+
+    def mouseMoveEvent(self, event: QMouseEvent) -> None:  # noqa: N802  (Qt's name)
+        """Pan."""
+        if self._drag is not None:
+            step = event.position().toPoint() - self._drag
+            self._drag = event.position().toPoint()
+            self.pan(step.x(), step.y())
+
+    def mouseReleaseEvent(self, event: QMouseEvent) -> None:  # noqa: N802  (Qt's name)
+        """End of panning."""
+        del event
+        self._drag = None
+        self.unsetCursor()
+
+    def keyPressEvent(self, event: QKeyEvent) -> None:  # noqa: N802  (Qt's name)
+        """Pan by arrows, zoom by plus and minus; Space held makes the left button pan."""
+        steps = {
+            Qt.Key.Key_Left: (_PAN_STEP_PX, 0),
+            Qt.Key.Key_Right: (-_PAN_STEP_PX, 0),
+            Qt.Key.Key_Up: (0, _PAN_STEP_PX),
+            Qt.Key.Key_Down: (0, -_PAN_STEP_PX),
+        }
+        zooms = {
+            Qt.Key.Key_Plus: ZOOM_PER_NOTCH,
+            Qt.Key.Key_Equal: ZOOM_PER_NOTCH,
+            Qt.Key.Key_Minus: 1 / ZOOM_PER_NOTCH,
+        }
+        key = Qt.Key(event.key())
+        if key in steps:
+            self.pan(*steps[key])
+        elif key in zooms:
+            self.zoom(zooms[key])
+        elif key == Qt.Key.Key_Space:
+            self._space = True
+        else:
+            super().keyPressEvent(event)
+
+    def keyReleaseEvent(self, event: QKeyEvent) -> None:  # noqa: N802  (Qt's name)
+        """Space let go."""
+        if event.key() == Qt.Key.Key_Space and not event.isAutoRepeat():
+            self._space = False
+        else:
+            super().keyReleaseEvent(event)

@@ -1,0 +1,136 @@
+"""The lines of the tables: every value of every part, as typed and in SI."""
+
+from collections.abc import Iterator
+from dataclasses import dataclass
+
+from modalview.model.addresses import Address, look
+from modalview.model.editable import EditableField, editable_fields
+from modalview.model.parts import Body, Machine, Model
+from modalview.model.tolerance_text import tolerance_text
+from modalview.units import quantities as q
+from modalview.units.quantities import Quantity
+from modalview.units.show import show, significant
+
+# The story is prose and stands beside the results; the system of units is no value of a part.
+_NOT_IN_TABLE = ("notes", "units")
+_MASS_LIKE = (q.MASS, q.INERTIA, q.PRODUCT_OF_INERTIA)
+
+
+@dataclass(frozen=True, slots=True)
+class ValueRow:
+    """One line.
+
+    Parameters
+    ----------
+    address : Address
+        Where the value stands in the model.
+    part : str
+        Name of the part, or its id.
+    part_id : str
+        Id of the part; "" for the model itself.
+    what : str
+        "stiffness x".
+    text : str
+        As typed.
+    converted : str
+        In SI, or hertz for what turns; "" where that says nothing new.
+    tolerance_address : Address or None
+        Where a tolerance can be typed.
+    tolerance : str
+        As typed; "" for none of its own.
+    inherited : str
+        What holds where the value has none of its own: "5 % (part)", "10 % (default)", "exact".
+    """
+
+    address: Address
+    part: str
+    part_id: str
+    what: str
+    text: str
+    converted: str
+    tolerance_address: Address | None
+    tolerance: str
+    inherited: str
+
+
+def converted(si: float, quantity: Quantity) -> str:
+    """Return a value in the unit the core keeps it in; what turns is shown in hertz.
+
+    >>> converted(1.75e8, q.STIFFNESS), converted(308.923, q.SPEED), converted(0.15, q.RATIO)
+    ('1.75e8 N/m', '49.167 Hz', '')
+    """
+    if quantity == q.RATIO:
+        return ""
+    if quantity in (q.SPEED, q.FREQUENCY):
+        return show(si, q.FREQUENCY, digits=5)
+    number = significant(si, 5)
+    mantissa, e, power = number.partition("e")
+    if "." in mantissa:
+        mantissa = mantissa.rstrip("0").rstrip(".")
+    return f"{mantissa}{e}{power} {quantity.si_unit}"
+
+
+def value_rows(model: Model) -> list[ValueRow]:
+    """Return every line of the parts table, in the order of the file."""
+    return list(_all_rows(model))
+
+
+def machine_rows(model: Model, machine: Machine) -> list[ValueRow]:
+    """Return the lines of a machine itself, without its excitations and its name."""
+    rows = _rows_of(model, ("machines", machine.id), machine.name or machine.id, machine.id)
+    return [row for row in rows if row.what != "name"]
+
+
+def _all_rows(model: Model) -> Iterator[ValueRow]:
+    yield from _rows_of(model, (), "model", "")
+    for kind in ("bodies", "supports", "links", "machines"):
+        for part in getattr(model, kind):
+            address = (kind, part.id)
+            yield from _rows_of(model, address, part.name or part.id, part.id)
+            for excitation in part.excitations if isinstance(part, Machine) else ():
+                name = f"{part.name or part.id}, {excitation.name or excitation.id}"
+                yield from _rows_of(model, (*address, "excitations", excitation.id), name, part.id)
+    for kind in ("measured", "limits"):
+        for part in getattr(model, kind):
+            yield from _rows_of(model, (kind, part.id), part.id, part.id)
+
+
+def _rows_of(model: Model, address: Address, part: str, part_id: str) -> Iterator[ValueRow]:
+    for field in editable_fields(model, address):
+        if field.name not in _NOT_IN_TABLE:
+            yield _row(model, field, part, part_id)
+
+
+def _row(model: Model, field: EditableField, part: str, part_id: str) -> ValueRow:
+    standing = look(model, field.address)
+    si = getattr(standing, "si", None)
+    known = si is not None and field.quantity is not None
+    return ValueRow(
+        address=field.address,
+        part=part,
+        part_id=part_id,
+        what=field.name,
+        text=field.text,
+        converted=converted(si, field.quantity) if known else "",
+        tolerance_address=field.tolerance_address,
+        tolerance=field.tolerance,
+        inherited=_inherited(model, field) if field.tolerance_address else "",
+    )
+
+
+def _inherited(model: Model, field: EditableField) -> str:
+    """Return the tolerance of a value that has none of its own: the part's, the default, else exact."""
+    part = look(model, field.address[:2])
+    own = getattr(part, "tolerance", None)
+    inner = getattr(getattr(part, "inertia", None), "tolerance", None)
+    if isinstance(part, Body) and "inertia" in field.address and inner is not None:
+        own = inner
+    if own is not None:
+        return f"{tolerance_text(own)} (part)"
+    default = model.default_tolerance
+    if default is not None:
+        mass_like = field.quantity in _MASS_LIKE
+        general = default.mass if mass_like else default.stiffness
+        if general is not None and field.quantity is not None:
+            return f"{tolerance_text(general)} (default)"
+    return "exact"

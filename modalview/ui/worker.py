@@ -1,0 +1,165 @@
+"""The one thread that studies models: a frozen order in, answers by a queued signal out.
+
+The study and the libraries below it are imported in that thread, so that the window is painted first.
+"""
+
+from collections.abc import Callable
+from dataclasses import dataclass, field
+from enum import Enum
+from threading import Event
+from typing import Any
+
+from PySide6.QtCore import QObject, QThread, Signal, Slot
+
+from modalview.errors import CancelledError, KeepclearError
+from modalview.model.parts import Model
+
+# Models of at most so many coordinates find their modes after each edit, unless switched off: below, all
+# modes take a few hundredths of a second.
+SMALL_MODEL = 300
+
+
+class Find(Enum):
+    """Whether the modes are wanted."""
+
+    NEVER = "only what is known before"
+    IF_SMALL = "where the model is small"
+    ALWAYS = "the person asked"
+
+
+@dataclass(frozen=True, slots=True)
+class Order:
+    """What is to be studied; ``stop`` is set by who no longer wants it."""
+
+    number: int
+    model: Model
+    find: Find
+    stop: Event = field(default_factory=Event, compare=False)
+
+
+class Step(Enum):
+    """What an answer tells; in brackets its content."""
+
+    LOOKED = "known before any solve (Outlook)"
+    FINDING = "the solve begins (nothing)"
+    PROGRESSED = "the solve goes on (what is done, share done)"
+    SOLVED = "modes found (Solution)"
+    REFUSED = "the model cannot be studied (KeepclearError)"
+    FAILED = "an error of the program (Exception)"
+    STOPPED = "the person stopped it (nothing)"
+
+
+@dataclass(frozen=True, slots=True)
+class Answer:
+    """One answer to an order."""
+
+    number: int
+    step: Step
+    content: Any = None
+
+
+@dataclass(frozen=True, slots=True)
+class Study:
+    """The doors of the core, as `modalview.study` has them."""
+
+    request: Callable[..., Any]
+    look: Callable[[Any], Any]
+    solve: Callable[[Any], Any]
+
+
+def load_study() -> Study:
+    """Import the study; takes some tenths of a second the first time."""
+    from modalview.study import look, solve  # noqa: PLC0415  (numpy and scipy come after the first paint)
+    from modalview.study.results import Request  # noqa: PLC0415
+
+    return Study(Request, look, solve)
+
+
+class _Desk(QObject):
+    """Lives in the thread and works through the orders one by one."""
+
+    answered = Signal(object)
+
+    def __init__(self, load: Callable[[], Study]) -> None:
+        super().__init__()
+        self._load = load
+
+    @Slot()
+    def on_started(self) -> None:
+        """Import while nobody waits."""
+        self._load()
+
+    @Slot(object)
+    def on_ordered(self, order: Order) -> None:
+        """Study one order and answer; nothing is raised into the thread's event loop."""
+        try:
+            self._work(order)
+        except CancelledError:
+            self._answer(order, Step.STOPPED)
+        except KeepclearError as error:
+            self._answer(order, Step.REFUSED, error)
+        except Exception as error:  # noqa: BLE001  (a thread has nobody else to tell)
+            self._answer(order, Step.FAILED, error)
+
+    def _answer(self, order: Order, step: Step, content: Any = None) -> None:
+        self.answered.emit(Answer(order.number, step, content))
+
+    def _work(self, order: Order) -> None:
+        if order.stop.is_set():
+            raise CancelledError
+        study = self._load()
+        request = study.request(
+            order.model,
+            number=order.number,
+            cancelled=order.stop.is_set,
+            progress=lambda what, share: self._answer(order, Step.PROGRESSED, (what, share)),
+        )
+        outlook = study.look(request)
+        self._answer(order, Step.LOOKED, outlook)
+        small = outlook.assembly.pencil.n <= SMALL_MODEL
+        if order.find is Find.ALWAYS or (order.find is Find.IF_SMALL and small):
+            self._answer(order, Step.FINDING)
+            self._answer(order, Step.SOLVED, study.solve(request))
+
+
+class Worker(QObject):
+    """Runs the orders of the window in one thread; of several orders only the latest is answered."""
+
+    answered = Signal(object)
+    _ordered = Signal(object)
+
+    def __init__(self, parent: QObject | None = None, load: Callable[[], Study] = load_study) -> None:
+        super().__init__(parent)
+        self._latest = Order(0, Model(), Find.NEVER)
+        self._thread = QThread()
+        self._thread.setObjectName("study")
+        self._desk = _Desk(load)
+        self._desk.moveToThread(self._thread)
+        self._thread.started.connect(self._desk.on_started)
+        self._ordered.connect(self._desk.on_ordered)
+        self._desk.answered.connect(self._on_answered)
+
+    def start(self) -> None:
+        """Start the thread; orders given before wait for it."""
+        self._thread.start()
+
+    def order(self, model: Model, find: Find) -> None:
+        """Ask for a study; an earlier order is stopped and its answers are dropped."""
+        self._latest.stop.set()
+        self._latest = Order(self._latest.number + 1, model, find)
+        self._ordered.emit(self._latest)
+
+    def stop(self) -> None:
+        """Stop the order that runs; it answers with ``STOPPED``."""
+        self._latest.stop.set()
+
+    def close(self) -> None:
+        """Stop and wait for the thread to end."""
+        self.stop()
+        self._thread.quit()
+        self._thread.wait()
+
+    @Slot(object)
+    def _on_answered(self, answer: Answer) -> None:
+        if answer.number == self._latest.number:
+            self.answered.emit(answer)
