@@ -39,6 +39,10 @@ def _one_line(node: Any) -> str | None:
             return None
         parts = [_one_line(item) for item in node]
         return None if None in parts else "[" + ", ".join(part or "" for part in parts) + "]"
+    return _scalar(node)
+
+
+def _scalar(node: Any) -> str:
     if isinstance(node, str):
         return encode_basestring(node)
     if isinstance(node, float) and node.is_integer() and abs(node) < EXACT:

@@ -133,4 +133,8 @@ def _check_size(tree: JsonMap, motion: Motion) -> None:
 
 def _covered(path: str, spoiled: list[str]) -> bool:
     """Tell whether a fault of meaning stands at, above or below a place that could not be read."""
-    return any(path == one or path.startswith(f"{one} . ") or one.startswith(f"{path} . ") for one in spoiled)
+    return any(path == one or _inside(path, one) or _inside(one, path) for one in spoiled)
+
+
+def _inside(path: str, whole: str) -> bool:
+    return path.startswith((f"{whole} . ", f"{whole}["))

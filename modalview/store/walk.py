@@ -70,8 +70,14 @@ def blank(shape: Shape) -> Any:
         return shape.records[0](**needed)
     if shape.choice:
         return next(iter(shape.choice))
-    if shape.items or shape.tolerance:
-        return () if shape.items else Tolerance()
+    if shape.items:
+        return (blank(shape.items),) * (shape.length or 0)
+    return Tolerance() if shape.tolerance else _blank_plain(shape)
+
+
+def _blank_plain(shape: Shape) -> float | str:
+    if shape.integer:
+        return 0
     return math.nan if shape.number else ""
 
 
