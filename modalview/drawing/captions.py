@@ -9,7 +9,6 @@ from modalview.model.parts import (
     Gear,
     InertiaTensor,
     Link,
-    Machine,
     Model,
     Motion,
     Mount,
@@ -78,7 +77,7 @@ def link_lines(model: Model, link: Link) -> tuple[str, ...]:
     return tuple(lines)
 
 
-def excitation_line(machine: Machine, excitation: Excitation) -> str:
+def excitation_line(excitation: Excitation) -> str:
     """Write an excitation: "1× unbalance, rotor 190 kg, G 6.3"."""
     head = _order(excitation) if excitation.order is not None else ""
     if excitation.frequency is not None:
@@ -96,7 +95,7 @@ def excitation_line(machine: Machine, excitation: Excitation) -> str:
             magnitude.motion,
         )
         words += [entry.text for entry in strengths if entry is not None]
-    return ", ".join(words) if machine.excitations else ""
+    return ", ".join(words)
 
 
 def shortened(text: str, room: float, text_scale: float = 1.0) -> str:

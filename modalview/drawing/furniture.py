@@ -13,6 +13,7 @@ from modalview.model.parts import FREEDOMS, Model, Motion
 
 GRID_STEP = 24.0
 MARGIN = 12.0
+TITLE_SHARE = 0.6  # of the block, for the left column
 
 
 @dataclass(frozen=True, slots=True)
@@ -45,27 +46,28 @@ def title_lines(model: Model, *, checked: str = "not yet", freedoms: int | None 
     return TitleLines(model.title or "untitled", revision, f"{model.motion} · {freedoms} DOF", checked)
 
 
-def title_size(text_scale: float) -> tuple[float, float]:
-    """Return width and height of the title block in pixels."""
-    return 300.0 * text_scale, 68.0 * text_scale
+def title_size(title: str, sheet_width: float, text_scale: float) -> tuple[float, float]:
+    """Return width and height of the title block in pixels: wide enough for the title, to half the sheet."""
+    need = (text_width(title, text_scale=text_scale) + 20.0) / TITLE_SHARE
+    width = min(max(need, 290.0 * text_scale), max(0.56 * sheet_width, 200.0), sheet_width - 2 * MARGIN)
+    return width, 68.0 * text_scale
 
 
 def title_block(lines: TitleLines, sheet_width: float, text_scale: float) -> tuple[Item, ...]:
     """Return the title block at the top right of a sheet, as wide as its longest texts, two by two."""
-    width, height = title_size(text_scale)
-    width = min(width, sheet_width - 2 * MARGIN)
+    width, height = title_size(lines.title, sheet_width, text_scale)
     left, top = sheet_width - MARGIN - width, MARGIN
-    split, middle = left + 0.6 * width, top + height / 2
+    split, middle = left + TITLE_SHARE * width, top + height / 2
     cross = np.array([[left, middle, left + width, middle], [split, top, split, top + height]])
     items: list[Item] = [
         Box(left, top, width, height, 0.0, Role.INK, Role.PAPER, 1.2),
         Lines(cross, Role.INK, 1.0),
     ]
     cells = (
-        ("title", lines.title, left, top, 0.6 * width),
-        ("revision", lines.revision, split, top, 0.4 * width),
-        ("motion", lines.motion, left, middle, 0.6 * width),
-        ("checked", lines.checked, split, middle, 0.4 * width),
+        ("title", lines.title, left, top, TITLE_SHARE * width),
+        ("revision", lines.revision, split, top, (1 - TITLE_SHARE) * width),
+        ("motion", lines.motion, left, middle, TITLE_SHARE * width),
+        ("checked", lines.checked, split, middle, (1 - TITLE_SHARE) * width),
     )
     for name, text, x, y, room in cells:
         inner = room - 14.0
@@ -96,7 +98,7 @@ def axes(motion: Motion, text_scale: float) -> tuple[tuple[Item, ...], Floats]:
     }[motion]
     steps = projection(motion)[:, ["xyz".index(name) for name in shown]].T * np.array([length, -length])
     low = np.minimum(steps.min(axis=0), 0.0)
-    origin = np.array([24.0, 22.0 * text_scale]) - low
+    origin = np.array([26.0, 30.0 * text_scale]) - low
     starts = np.tile(origin, (len(steps), 1))
     items: list[Item] = [Lines(arrow(starts, steps), Role.INK, 1.3)]
     for name, step in zip(shown, steps, strict=True):

@@ -14,7 +14,9 @@ from modalview.model.parts import Gear, Model, Motion
 
 Indices = np.ndarray[tuple[int, ...], np.dtype[np.int_]]
 
-LARGEST_STEP = (270.0, 175.0)  # pixels between neighbours of a model whose distances carry no meaning
+# Pixels between neighbours of a model whose distances carry no meaning.
+LARGEST_STEP = (270.0, 175.0)
+LARGEST_ROW = 110.0  # the same between parallel shafts
 TWIST = 30.0  # pixels of the largest rotation beside a shaft
 ROUNDS = 3  # of fitting: sizes follow the scale, the scale follows the sizes
 
@@ -206,7 +208,7 @@ def _fit(
         return view, outlines(model, places, view, grow)
     matrix = projection(model.motion)
     world = np.concatenate([places.centres, places.ends.reshape(-1, 3)])
-    largest = _largest(places, grow) if places.stretchable else (np.inf, np.inf)
+    largest = _largest(places, model.motion, grow) if places.stretchable else (np.inf, np.inf)
     x, y, width, height = area
     inner = (x + width * 0.12, y + height * 0.1, width * 0.76, height * 0.8)
     found = fitted(world @ matrix.T, matrix, inner, stretchable=places.stretchable, largest=largest)
@@ -222,12 +224,13 @@ def _fit(
     return found, outline
 
 
-def _largest(places: Layout, grow: float) -> tuple[float, float]:
+def _largest(places: Layout, motion: Motion, grow: float) -> tuple[float, float]:
+    steps_allowed = (LARGEST_STEP[0], LARGEST_ROW if motion is Motion.SHAFT_TRAIN else LARGEST_STEP[1])
     largest = []
     for axis in (0, 1):
         levels = np.unique(np.concatenate([places.centres[:, axis], places.ends[..., axis].ravel()]))
         steps = np.diff(levels)
-        largest.append(LARGEST_STEP[axis] * grow / float(steps.min()) if len(steps) else np.inf)
+        largest.append(steps_allowed[axis] * grow / float(steps.min()) if len(steps) else np.inf)
     return largest[0], largest[1]
 
 
@@ -241,8 +244,8 @@ def _boxes(places: Layout, view: View, faces_of: list[Floats]) -> tuple[Floats, 
         if len(body_faces) == 1:
             fronts[number] = boxes[number]
         else:  # the largest upright rectangle inside the slanted front face
-            ordered = np.sort(front[:, 1])
-            fronts[number] = (front[:, 0].min(), ordered[1], front[:, 0].max(), ordered[2])
+            top, bottom = front[2:, 1].max(), front[:2, 1].min()
+            fronts[number] = (front[:, 0].min(), top, front[:, 0].max(), bottom)
     return boxes, fronts
 
 

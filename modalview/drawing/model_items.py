@@ -5,10 +5,10 @@ from dataclasses import replace
 import numpy as np
 
 from modalview.drawing.furniture import TitleLines, axes, grid, title_block
-from modalview.drawing.geometry import SheetGeometry
+from modalview.drawing.geometry import LinkGroup, SheetGeometry
 from modalview.drawing.layout import GROUND
 from modalview.drawing.primitives import Circles, Floats, Item, Lines, Polygons, Role
-from modalview.drawing.symbols import TEMPLATES, Symbol, between, dashed, ground, outline
+from modalview.drawing.symbols import JOINTS, TEMPLATES, Symbol, between, dashed, ground, outline
 from modalview.model.parts import Motion
 
 MARK = 5.5  # radius of the centre of gravity mark, pixels
@@ -20,7 +20,9 @@ def part_items(geometry: SheetGeometry, points: Floats) -> tuple[Item, ...]:
     under = [item for group in geometry.links if not group.on_top for item in _link(geometry, group, points)]
     over = [item for group in geometry.links if group.on_top for item in _link(geometry, group, points)]
     width = 1.7 if geometry.grow > 0.8 else 1.3
-    bodies = [Polygons(points[indices], Role.INK, Role.PAPER, width) for indices in geometry.faces]
+    # Parts behind a body in space shimmer through, as hidden edges are told by faint lines.
+    fill = 0.86 if geometry.model.motion is Motion.SPACE else 1.0
+    bodies = [Polygons(points[indices], Role.INK, Role.PAPER, width, fill) for indices in geometry.faces]
     return (*under, *bodies, *over, *_marks(geometry, points), *_teeth(geometry))
 
 
@@ -88,12 +90,11 @@ def label_items(geometry: SheetGeometry, steps: Floats | None = None) -> tuple[I
     )
 
 
-def _link(geometry: SheetGeometry, group: object, points: Floats) -> list[Item]:
-    return _group(geometry.grow, group.symbol, points[group.ends])  # type: ignore[attr-defined]
-
-
-def _group(grow: float, symbol: Symbol, ends: Floats) -> list[Item]:
+def _link(geometry: SheetGeometry, group: LinkGroup, points: Floats) -> list[Item]:
+    grow, symbol, ends = geometry.grow, group.symbol, points[group.ends]
     template, width = TEMPLATES[symbol]
+    if group.on_top:
+        template = JOINTS.get(symbol, template)
     items: list[Item] = [Lines(between(template, ends, grow), Role.INK, max(width * grow, 1.0))]
     if symbol is Symbol.RIGID:
         items.append(Circles(ends.reshape(-1, 2), DOT * grow, Role.INK, Role.INK))

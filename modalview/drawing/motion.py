@@ -8,6 +8,8 @@ from modalview.drawing.furniture import TitleLines, sheet_of
 from modalview.drawing.geometry import SheetGeometry
 from modalview.drawing.layout import GROUND
 from modalview.drawing.model_items import (
+    axis_items,
+    excitation_items,
     ghost_items,
     ground_items,
     label_items,
@@ -108,8 +110,7 @@ def frozen(geometry: SheetGeometry, posed: Pose, factor: float = 1.0) -> Drawing
 def still_drawing(geometry: SheetGeometry, title: TitleLines | None) -> Drawing:
     """Return what lies under the frames: paper, ground, labels of links, title block and the ghost at rest."""
     items = paper_items(geometry, title) + ground_items(geometry) + ghost_items(geometry)
-    if geometry.train is not None:
-        items += train_items(geometry)
+    items += axis_items(geometry) + train_items(geometry) + excitation_items(geometry)
     return sheet_of((*items, *geometry.labels), geometry.width, geometry.height, geometry.text_scale)
 
 
@@ -152,12 +153,9 @@ def _arrows(geometry: SheetGeometry, posed: Pose, sign: float) -> tuple[Item, ..
     moving = posed.sizes > STILL
     steps = sign * posed.centre_steps * (ARROW / geometry.reach)
     long = moving & (np.hypot(steps[:, 0], steps[:, 1]) > 3.0)
-    upright = np.abs(steps[:, 1]) >= np.abs(steps[:, 0])
     boxes = geometry.boxes
-    middle = (boxes[:, :2] + boxes[:, 2:]) / 2
-    beside = np.stack([boxes[:, 0] - 14.0, middle[:, 1]], axis=1)
-    above = np.stack([middle[:, 0], boxes[:, 1] - 12.0], axis=1)
-    start = np.where(upright[:, None], beside, above) - steps / 2
+    beside = np.stack([boxes[:, 0] - 13.0 - np.abs(steps[:, 0]) / 2, boxes[:, [1, 3]].mean(axis=1)], axis=1)
+    start = beside - steps / 2
     items: tuple[Item, ...] = (Lines(arrow(start[long], steps[long]), Role.ACCENT, 2.0),)
     corner = np.stack([boxes[:, 2] + 4.0, boxes[:, 1] - 4.0], axis=1)
     return items + _turn_arrows(corner[moving], 11.0, posed.turns[moving] * sign)

@@ -13,6 +13,7 @@ from modalview.drawing.model_items import (
     label_items,
     paper_items,
     part_items,
+    train_items,
 )
 from modalview.drawing.primitives import Box, Drawing, Item, Role
 from modalview.drawing.view import View
@@ -39,7 +40,7 @@ def sheet_geometry(
         None fits the model; else what ``geometry.view.panned`` or ``zoomed`` gave.
     """
     side = min(SIDE * text_scale, 0.2 * width)
-    top = title_size(text_scale)[1] + 46.0 * text_scale
+    top = title_size(model.title, width, text_scale)[1] + 46.0 * text_scale
     area = (side, top, max(width - 2 * side, 40.0), max(height - top - BOTTOM, 40.0))
     return lettered(bare_geometry(model, (width, height), area, view, 1.0, text_scale))
 
@@ -49,6 +50,7 @@ def sheet_drawing(
 ) -> Drawing:
     """Return the sheet at rest, with the selected part framed."""
     items = paper_items(geometry, title) + ground_items(geometry) + axis_items(geometry)
+    items += train_items(geometry)
     items += part_items(geometry, geometry.points.rest) + excitation_items(geometry)
     items += (*geometry.labels, *label_items(geometry), *_frame(geometry, selected))
     return sheet_of(items, geometry.width, geometry.height, geometry.text_scale)

@@ -66,6 +66,18 @@ TEMPLATES: dict[Symbol, tuple[Floats, float]] = {
     Symbol.GEAR: (_NOTHING, 1.0),
 }
 
+# The same where two bodies touch and the link lies across the joint.
+JOINTS: dict[Symbol, Floats] = {
+    Symbol.SPRING: _chain([(0.0, 0.0), *_zigzag(0.2, 0.8, 4, 6.0), (1.0, 0.0)]),
+    Symbol.MOUNT: np.vstack(
+        [
+            _chain([(0.0, 0.0), (0.25, 0.0), (0.5, 7.0), (0.75, 0.0), (0.5, -7.0), (0.25, 0.0)]),
+            _chain([(0.75, 0.0), (1.0, 0.0)]),
+            np.array([[0.0, -5.0, 0.0, 5.0], [1.0, -5.0, 1.0, 5.0]]),
+        ]
+    ),
+}
+
 
 def between(template: Floats, ends: Floats, thick: float = 1.0) -> Floats:
     """Return the segments of one symbol along many links.
