@@ -1,1 +1,7 @@
 """The one door to the core: a frozen request in, a frozen result with its evidence out."""
+
+from modalview.study.look import look
+from modalview.study.results import FoundMode, Interval, Outlook, Request, Share, Solution
+from modalview.study.solve import solve
+
+__all__ = ["FoundMode", "Interval", "Outlook", "Request", "Share", "Solution", "look", "solve"]

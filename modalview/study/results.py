@@ -99,9 +99,9 @@ class Outlook:
 
 @dataclass(frozen=True, slots=True)
 class Share:
-    """A part's share of a mode's energy."""
+    """What one part, value or direction has in a mode."""
 
-    id: str  # id of the parameter, such as "k3.stiffness"
+    id: str
     label: str
     fraction: float
 
@@ -124,7 +124,11 @@ class FoundMode:
     repeated_with : tuple of int
         Numbers of the modes of the same frequency, itself included; empty when alone.
     strain, kinetic : tuple of Share
-        Largest first; of springs and of masses.
+        Largest first; of links and of bodies, summed over what each contributes.
+    sensitivity : tuple of Share
+        d(ln f) / d(ln value) for every typed value, largest first; ids such as "k3.stiffness".
+    effective_mass : tuple of Share
+        Share of the whole mass that takes part along each direction ("x", "y", ...).
     motion : array (bodies, 6)
         x, y, z, rx, ry, rz of every body in the order of the model, largest motion 1 (rotations in
         radians on the same factor).
@@ -139,6 +143,8 @@ class FoundMode:
     repeated_with: tuple[int, ...]
     strain: tuple[Share, ...]
     kinetic: tuple[Share, ...]
+    sensitivity: tuple[Share, ...]
+    effective_mass: tuple[Share, ...]
     motion: npt.NDArray[np.float64]
 
 
@@ -153,6 +159,8 @@ class Solution:
     raw : Modes
         Eigenvalues, shapes and evidence.
     modes : tuple of FoundMode
+    modal_mass : tuple of float
+        Mass that each mode moves when its largest motion is 1 m; kg.
     checks : tuple of Check
         With nearest modes, separations and drives.
     sentence : str
@@ -165,6 +173,7 @@ class Solution:
     outlook: Outlook
     raw: Modes
     modes: tuple[FoundMode, ...]
+    modal_mass: tuple[float, ...]
     checks: tuple[Check, ...]
     sentence: str
     evidence: tuple[str, ...]

@@ -1,0 +1,145 @@
+"""The commands: each reads its words, asks the study, and prints text or JSON."""
+
+import argparse
+import json
+import sys
+from collections.abc import Callable
+from pathlib import Path
+from typing import Any
+
+from modalview.cli import documents, texts
+from modalview.errors import KeepclearError
+from modalview.model.parts import Model
+from modalview.resonance.results import Verdict
+from modalview.store import read_model
+from modalview.study import Outlook, Request, Solution, look, solve
+
+OK, NOT_CLEAR, UNUSABLE = 0, 1, 2
+
+Prepare = Callable[[argparse.ArgumentParser], None]
+PICTURES = ("sheet", "scale", "mode")
+
+
+def _file(words: argparse.Namespace) -> tuple[Path, Model]:
+    return words.file, read_model(words.file)
+
+
+def _say(text: str) -> None:
+    sys.stdout.write(text.rstrip("\n") + "\n")
+
+
+def _say_json(document: Any) -> None:
+    _say(json.dumps(document, indent=2, ensure_ascii=False, allow_nan=False))
+
+
+def _progress(what: str, share: float) -> None:
+    """Tell how far long work is, on a screen only."""
+    if sys.stderr.isatty():
+        sys.stderr.write(f"\r{100 * share:3.0f} %  {what:<40.40}")
+        if share >= 1:
+            sys.stderr.write("\r" + " " * 48 + "\r")
+        sys.stderr.flush()
+
+
+def _solved(model: Model) -> Solution:
+    return solve(Request(model, progress=_progress))
+
+
+def _prepare_file(parser: argparse.ArgumentParser) -> None:
+    parser.add_argument("file", type=Path, metavar="FILE", help="a .keepclear file")
+    parser.add_argument("--json", action="store_true", help="print JSON: SI, with the unit in each key")
+
+
+def _prepare_bounds(parser: argparse.ArgumentParser) -> None:
+    _prepare_file(parser)
+    parser.set_defaults(run=run_bounds)
+
+
+def run_bounds(words: argparse.Namespace) -> int:
+    """Print what is known before a solve."""
+    path, model = _file(words)
+    outlook = look(Request(model))
+    if words.json:
+        _say_json(documents.bounds_document(path, outlook))
+    else:
+        _say(texts.bounds_text(outlook))
+    return OK
+
+
+def _prepare_modes(parser: argparse.ArgumentParser) -> None:
+    _prepare_file(parser)
+    parser.set_defaults(run=run_modes)
+
+
+def run_modes(words: argparse.Namespace) -> int:
+    """Print the modes."""
+    path, model = _file(words)
+    solution = _solved(model)
+    if words.json:
+        _say_json(documents.modes_document(path, solution))
+    else:
+        _say(texts.modes_text(solution))
+    return OK
+
+
+def _prepare_check(parser: argparse.ArgumentParser) -> None:
+    parser.add_argument("files", type=Path, nargs="+", metavar="FILE", help="one or more .keepclear files")
+    parser.add_argument("--json", action="store_true", help="print JSON: SI, with the unit in each key")
+    parser.set_defaults(run=run_check)
+
+
+def run_check(words: argparse.Namespace) -> int:
+    """Print the verdicts; the exit code is the worst of the files."""
+    found, codes = [], []
+    for path in words.files:
+        try:
+            solution = _solved(read_model(path))
+            found.append(documents.check_document(path, solution))
+            codes.append(_code(solution.outlook))
+            if not words.json:
+                _say(texts.check_text(path, solution))
+        except KeepclearError as error:
+            if len(words.files) == 1:
+                raise
+            found.append({"file": str(path), "error": str(error)})
+            codes.append(UNUSABLE)
+            sys.stderr.write(f"keepclear: {path}: {error}\n")
+        if not words.json and path is not words.files[-1]:
+            _say("")
+    if words.json:
+        _say_json(found[0] if len(words.files) == 1 else found)
+    return max(codes)
+
+
+def _code(outlook: Outlook) -> int:
+    if outlook.verdict is None:
+        return UNUSABLE
+    return OK if outlook.verdict is Verdict.CLEAR else NOT_CLEAR
+
+
+def _prepare_picture(parser: argparse.ArgumentParser) -> None:
+    parser.add_argument("file", type=Path, metavar="FILE", help="a .keepclear file")
+    parser.add_argument("-o", "--output", type=Path, required=True, metavar="OUT.png", help="where it goes")
+    parser.add_argument("--of", choices=PICTURES, default="sheet", help="what it shows (default: sheet)")
+    parser.add_argument("--mode", type=int, metavar="N", help="the mode shown, from 1 (with --of mode)")
+    parser.add_argument("--size", default="1200x800", metavar="WxH", help="in pixels (default: 1200x800)")
+    parser.add_argument("--dark", action="store_true", help="dark colours")
+    parser.set_defaults(run=run_picture)
+
+
+def run_picture(words: argparse.Namespace) -> int:
+    """Write a picture of the sheet, a mode or the scale, without a screen."""
+    from modalview.cli.pictures import write_picture  # noqa: PLC0415  (Qt is loaded only for a picture)
+
+    _, model = _file(words)
+    write_picture(model, words)
+    _say(f"{words.output} written")
+    return OK
+
+
+COMMANDS: dict[str, tuple[str, Prepare]] = {
+    "bounds": ("tell what is known of the modes before any solve", _prepare_bounds),
+    "modes": ("find the modes, with their range over all tolerances", _prepare_modes),
+    "check": ("prove whether any speed or order meets a mode, over all tolerances", _prepare_check),
+    "picture": ("draw the sheet, a mode or the frequency scale, without a screen", _prepare_picture),
+}

@@ -1,0 +1,103 @@
+"""The frequencies to be kept clear: machine speeds and orders, widened by their margins."""
+
+import math
+from fractions import Fraction
+
+from modalview.assembly.locks import speed_ratios
+from modalview.errors import Fault, ModelFaultsError
+from modalview.model.parts import Excitation, Machine, Margin, Model, SpeedRange
+from modalview.resonance.results import Band
+from modalview.units.show import significant
+
+RAD_PER_HZ = 2 * math.pi
+
+
+def bands(model: Model) -> tuple[Band, ...]:
+    """Return the avoidance band of every excitation of every machine, in the order of the file.
+
+    Returns
+    -------
+    tuple of Band
+        [p n1 (1 - margin below), p n2 (1 + margin above)] for order p of speeds n1 to n2; a speed
+        tolerance widens n1 and n2 in the tolerance band; fixed frequencies are not widened. rad/s.
+
+    Raises
+    ------
+    ModelFaultsError
+        An order refers to a body that does not turn with the machine, or a margin is missing.
+
+    Notes
+    -----
+    The reference of a margin is the excitation frequency (common practice, no source).
+    """
+    return tuple(
+        _band(model, machine, excitation) for machine in model.machines for excitation in machine.excitations
+    )
+
+
+def _band(model: Model, machine: Machine, excitation: Excitation) -> Band:
+    check = f"{machine.id}/{excitation.id}"
+    below, above = _margin(machine, excitation, check)
+    if excitation.frequency is not None:
+        low = high = excitation.frequency.si
+        widened = (low, high)
+    else:
+        order = float(abs(_ratio(model, machine, excitation, check))) * float(excitation.order or 0.0)
+        slow, fast = _speeds(machine, check)
+        tolerance = machine.speed_tolerance.si if machine.speed_tolerance else 0.0
+        low, high = order * slow, order * fast
+        widened = (low * (1 - tolerance), high * (1 + tolerance))
+    return Band(
+        check=check,
+        machine=machine.id,
+        excitation_id=excitation.id,
+        label=excitation_label(excitation),
+        order=excitation.order,
+        excitation=(low, high),
+        nominal=(low * (1 - below), high * (1 + above)),
+        tolerance=(widened[0] * (1 - below), widened[1] * (1 + above)),
+        margin=(below, above),
+    )
+
+
+def excitation_label(excitation: Excitation) -> str:
+    """Return a short label: "1×", "7× vane pass", "100 Hz line"."""
+    if excitation.frequency is not None:
+        head = f"{significant(excitation.frequency.si / RAD_PER_HZ, 4).rstrip('0').rstrip('.')} Hz"
+    else:
+        head = f"{excitation.order:g}×"
+    return f"{head} {excitation.name}" if excitation.name else head
+
+
+def _margin(machine: Machine, excitation: Excitation, check: str) -> tuple[float, float]:
+    margin = excitation.margin if excitation.margin is not None else machine.margin
+    if margin is None:
+        raise ModelFaultsError(
+            (Fault(check, "no margin is given; there is no default, state one such as 15 %"),)
+        )
+    if isinstance(margin, Margin):
+        return margin.below.si, margin.above.si
+    return margin.si, margin.si
+
+
+def _speeds(machine: Machine, check: str) -> tuple[float, float]:
+    if machine.speed is None:
+        raise ModelFaultsError((Fault(check, "an order needs the speed of its machine"),))
+    if isinstance(machine.speed, SpeedRange):
+        return machine.speed.from_.si, machine.speed.to.si
+    return machine.speed.si, machine.speed.si
+
+
+def _ratio(model: Model, machine: Machine, excitation: Excitation, check: str) -> Fraction:
+    """Return how fast the body an order belongs to turns against the machine's own."""
+    if excitation.of is None or excitation.of == machine.on:
+        return Fraction(1)
+    ratios = speed_ratios(model)
+    (train, own), (other_train, speed) = ratios[machine.on or ""], ratios[excitation.of]
+    if train != other_train:
+        reason = (
+            f"{excitation.of} is joined to {machine.on} by no shaft or gear, so the speed of {machine.on} "
+            "does not say how fast it turns; give the excitation as a frequency"
+        )
+        raise ModelFaultsError((Fault(check, reason),))
+    return speed / own

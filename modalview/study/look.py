@@ -1,0 +1,78 @@
+"""What is known before any solve: bounds, counts and the proven verdict."""
+
+import math
+from time import perf_counter
+
+from modalview.assembly.assemble import Assembly, assemble
+from modalview.assembly.parameters import Case
+from modalview.bounds.bands import count_band
+from modalview.bounds.before import before_solve
+from modalview.errors import CancelledError
+from modalview.resonance.bands import bands
+from modalview.resonance.results import Check
+from modalview.resonance.unchecked import not_checked
+from modalview.resonance.verdict import Exactness, judge, worst
+from modalview.study.intervals import scale_intervals
+from modalview.study.results import Outlook, Request
+from modalview.study.sentence import sentence
+
+RAD_PER_HZ = 2 * math.pi
+
+
+def look(request: Request, previous: Outlook | None = None) -> Outlook:
+    """Tell what is known of a model before any solve.
+
+    Parameters
+    ----------
+    request : Request
+    previous : Outlook or None
+        Of an earlier state of the model: what only depends on its structure is taken over.
+
+    Raises
+    ------
+    ModelFaultsError
+        The model cannot be analysed; names the part.
+    CancelledError
+    """
+    start = perf_counter()
+    model = request.model
+    assembly = assemble(model, previous.assembly if previous else None)
+    _stop_if(request)
+    bounds = before_solve(assembly.pencil())
+    _stop_if(request)
+    checks = _checks(request, assembly)
+    return Outlook(
+        request=request,
+        assembly=assembly,
+        bounds=bounds,
+        checks=checks,
+        verdict=worst(checks),
+        sentence=sentence(model, checks),
+        intervals=scale_intervals(assembly.pencil(), checks),
+        not_checked=not_checked(model),
+        notes=_notes(assembly),
+        seconds=perf_counter() - start,
+    )
+
+
+def _checks(request: Request, assembly: Assembly) -> tuple[Check, ...]:
+    exactness = Exactness(assembly.taken_as_exact, sum(p.family != "damping" for p in assembly.parameters))
+    cases = [assembly.pencil(case) for case in Case]
+    found = []
+    for band in bands(request.model):
+        _stop_if(request)
+        found.append(judge(band, count_band(*cases, band.nominal, band.tolerance), exactness))
+    return tuple(found)
+
+
+def _stop_if(request: Request) -> None:
+    if request.cancelled():
+        raise CancelledError("Stopped by the user.")
+
+
+def _notes(assembly: Assembly) -> tuple[str, ...]:
+    exact = [p for p in assembly.parameters if p.exact and p.family != "damping"]
+    if not exact or not assembly.toleranced:
+        return assembly.notes
+    names = ", ".join(f"{p.label} {p.id.rpartition('.')[2]}" for p in exact)
+    return (*assembly.notes, f"taken as exact, without tolerance: {names}")

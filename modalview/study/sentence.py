@@ -1,0 +1,90 @@
+"""The verdict in one sentence, for the top of the window and the command line."""
+
+import math
+from collections.abc import Sequence
+
+from modalview.model.parts import Machine, Model, SpeedRange
+from modalview.resonance.results import Check, Verdict
+from modalview.resonance.wording import hz_range, margin_text, percent
+from modalview.study.results import FoundMode
+from modalview.units.show import significant
+
+NOTHING_TO_CHECK = "Nothing to check: give a machine its speed, its orders and the margin wanted."
+
+
+def sentence(model: Model, checks: Sequence[Check], modes: Sequence[FoundMode] = ()) -> str:
+    """Return the verdict in words: the deciding check first, then the others.
+
+    Parameters
+    ----------
+    model : Model
+    checks : sequence of Check
+    modes : sequence of FoundMode
+        Empty before the solve.
+    """
+    if not checks:
+        return NOTHING_TO_CHECK
+    order = list(Verdict)
+    ranked = sorted(checks, key=lambda check: -order.index(check.verdict))
+    bad = [check for check in ranked if check.verdict is not Verdict.CLEAR]
+    said = [_in_full(model, check, modes) for check in bad]
+    said += _clear(model, [check for check in ranked if check.verdict is Verdict.CLEAR], alone=not bad)
+    return " ".join(said)
+
+
+def excitation_text(model: Model, check: Check) -> str:
+    """Return "1× of 2950 rpm (49.2 Hz)"."""
+    band = check.band
+    machine = next(m for m in model.machines if m.id == band.machine)
+    if band.order is None:
+        return f"{band.label}"
+    return f"{band.label} of {speed_text(machine)} ({hz_range(*band.excitation)})"
+
+
+def speed_text(machine: Machine) -> str:
+    """Return the speed or range of a machine, in rpm."""
+    rpm = 2 * math.pi / 60
+    if isinstance(machine.speed, SpeedRange):
+        return f"{machine.speed.from_.si / rpm:.5g} to {machine.speed.to.si / rpm:.5g} rpm"
+    return f"{machine.speed.si / rpm:.5g} rpm" if machine.speed else "no speed"
+
+
+def _in_full(model: Model, check: Check, modes: Sequence[FoundMode]) -> str:
+    head = excitation_text(model, check)
+    mode = next((m for m in modes if m.number == check.nearest_mode), None)
+    if mode is None or check.separation is None or check.undecided:
+        return f"{head}: {check.reason}."
+    found = f"mode {mode.number} at {significant(mode.frequency_hz, 3)} Hz"
+    low, high = mode.range_hz
+    if high > low:
+        found += f" ({significant(low, 3)} to {significant(high, 3)} over tolerance)"
+    wanted = f"{margin_text(check.band.margin)} is wanted"
+    if check.separation == 0:
+        place = "lies within the excitation range"
+    else:
+        side = "above" if check.separation > 0 else "below"
+        place = f"is {abs(100 * check.separation):.1f} % {side}"
+    if check.verdict is Verdict.NOMINAL_ONLY:
+        return f"{head}: {found} {place}, but over tolerance {_reach(check)}; {wanted}."
+    return f"{head}: {found} {place}; {wanted}."
+
+
+def _reach(check: Check) -> str:
+    if check.deciding_case is None:
+        return "the speed tolerance reaches it"
+    if check.worst_separation:
+        return f"comes to {percent(check.worst_separation)} ({check.deciding_case})"
+    return f"the {check.deciding_case} case reaches the band"
+
+
+def _clear(model: Model, checks: Sequence[Check], *, alone: bool) -> list[str]:
+    if not checks:
+        return []
+    groups: dict[str, list[str]] = {}
+    for check in checks:
+        name = excitation_text(model, check) if alone else check.band.label
+        groups.setdefault(check.wording, []).append(name)
+    parts = [
+        f"{', '.join(names)} {'is' if len(names) == 1 else 'are'} {word}" for word, names in groups.items()
+    ]
+    return [", ".join(parts) + "."]

@@ -1,0 +1,218 @@
+"""The modes of a model, their ranges over all tolerances, and what they add to the checks."""
+
+from collections.abc import Sequence
+from dataclasses import replace
+from time import perf_counter
+
+import numpy as np
+import numpy.typing as npt
+
+from modalview.assembly.assemble import Assembly
+from modalview.assembly.loads import unit_force
+from modalview.assembly.parameters import Case
+from modalview.eigen.modes import Modes
+from modalview.eigen.shares import modal_mass, participation
+from modalview.eigen.solve import find_modes
+from modalview.model.parts import Model
+from modalview.resonance.drive import mode_drives
+from modalview.resonance.results import Check, ModeDrive
+from modalview.resonance.separation import nearest
+from modalview.study.look import RAD_PER_HZ, look
+from modalview.study.names import mode_name
+from modalview.study.results import FoundMode, Outlook, Request, Share, Solution
+from modalview.study.sentence import sentence
+from modalview.study.shares import (
+    by_part,
+    direction_shares,
+    drive_directions,
+    kinetic_energies,
+    labels,
+    sensitivities,
+    strain_energies,
+)
+
+Array = npt.NDArray[np.float64]
+
+RIGID, ELASTIC, UNSTABLE = "rigid-body", "elastic", "unstable"
+
+
+def solve(request: Request, outlook: Outlook | None = None) -> Solution:
+    """Find all modes of a model and complete its checks.
+
+    Parameters
+    ----------
+    request : Request
+    outlook : Outlook or None
+        Of the same model, if it is there already.
+
+    Raises
+    ------
+    InputError
+        The model cannot be analysed, or is too large.
+    CancelledError
+    """
+    start = perf_counter()
+    if outlook is None or outlook.request.model is not request.model:
+        outlook = look(request, outlook)
+    assembly = outlook.assembly
+    raw = _find(request, assembly, Case.NOMINAL, 0)
+    ranges = _ranges(request, assembly, raw)
+    modes = _found(assembly, raw, ranges)
+    checks = tuple(_completed(request.model, assembly, check, raw, modes) for check in outlook.checks)
+    return Solution(
+        outlook=outlook,
+        raw=raw,
+        modes=modes,
+        modal_mass=tuple(map(float, modal_mass(assembly.pencil(), raw))),
+        checks=checks,
+        sentence=sentence(request.model, checks, modes),
+        evidence=_evidence(raw, modes),
+        seconds=perf_counter() - start,
+    )
+
+
+def _find(request: Request, assembly: Assembly, case: Case, step: int) -> Modes:
+    """Find the modes of one case, telling progress as a share of all cases."""
+    steps = len(Case) if assembly.toleranced else 1
+
+    def told(what: str, share: float) -> None:
+        if request.progress is not None:
+            request.progress(f"{case}: {what}", (step + share) / steps)
+
+    return find_modes(assembly.pencil(case), cancelled=request.cancelled, progress=told)
+
+
+def _ranges(request: Request, assembly: Assembly, raw: Modes) -> Array:
+    """Return the lowest and highest frequency of every mode over all tolerances (modes, 2), Hz."""
+    if not assembly.toleranced:
+        return np.column_stack([raw.frequency_hz, raw.frequency_hz])
+    soft = _find(request, assembly, Case.SOFT_HEAVY, 1)
+    stiff = _find(request, assembly, Case.STIFF_LIGHT, 2)
+    ends = np.column_stack([soft.lower, stiff.upper])
+    ends[raw.unstable : raw.unstable + raw.rigid_body_modes] = 0.0
+    found: Array = np.sqrt(np.maximum(ends, 0.0)) / RAD_PER_HZ
+    return found
+
+
+def _found(assembly: Assembly, raw: Modes, ranges: Array) -> tuple[FoundMode, ...]:
+    model = assembly.model
+    strain, kinetic = strain_energies(assembly, raw), kinetic_energies(assembly, raw)
+    motion = _motions(assembly, raw.shapes)
+    link_names, body_names = labels(model.links), labels(model.bodies)
+    effective = _effective_masses(assembly, raw)
+    repeated = {i: (start, stop) for start, stop in raw.repeated for i in range(start, stop)}
+    found = []
+    for i in range(raw.number):
+        kind = _kind(raw, i)
+        start, stop = repeated.get(i, (0, 0))
+        found.append(
+            FoundMode(
+                number=i + 1,
+                name=_named(model, assembly, motion[i], kind),
+                frequency_hz=float(raw.frequency_hz[i]),
+                numerical_error_hz=float(raw.numerical_error_hz[i]),
+                range_hz=(float(ranges[i, 0]), float(ranges[i, 1])),
+                kind=kind,
+                repeated_with=tuple(range(start + 1, stop + 1)) if kind == ELASTIC else (),
+                strain=by_part(assembly.structure.stiffness, strain[:, i], link_names)
+                if kind == ELASTIC
+                else (),
+                kinetic=by_part(assembly.structure.mass, kinetic[:, i], body_names),
+                sensitivity=sensitivities(assembly, strain[:, i], kinetic[:, i]) if kind == ELASTIC else (),
+                effective_mass=effective[i],
+                motion=motion[i],
+            )
+        )
+    return tuple(found)
+
+
+def _kind(raw: Modes, i: int) -> str:
+    if i < raw.unstable:
+        return UNSTABLE
+    return RIGID if i < raw.unstable + raw.rigid_body_modes else ELASTIC
+
+
+def _named(model: Model, assembly: Assembly, motion: Array, kind: str) -> str:
+    name = mode_name(model, motion, direction_shares(assembly, motion))
+    return name if kind == ELASTIC else f"{kind}: {name}"
+
+
+def _motions(assembly: Assembly, shapes: Array) -> Array:
+    """Return the motion of every body in every mode (modes, bodies, 6), the largest scaled to 1.
+
+    Rotations count by the model's scale; the sign is such that the largest motion is positive.
+    """
+    motion = assembly.body_motion(shapes)
+    scaled = assembly.pencil().scale[:, None] * shapes
+    for row, column in zip(motion, scaled.T, strict=True):
+        largest = column[int(np.argmax(np.abs(column)))]
+        if largest:
+            np.divide(row, largest, out=row)
+    motion.setflags(write=False)
+    return motion
+
+
+def _effective_masses(assembly: Assembly, raw: Modes) -> list[tuple[Share, ...]]:
+    names, directions = drive_directions(assembly)
+    pencil = assembly.pencil()
+    _, masses = participation(pencil, raw, directions)
+    whole = np.einsum("ik,ik->k", directions, np.asarray(pencil.M @ directions))
+    shares = np.divide(masses, whole, out=np.zeros_like(masses), where=whole > 0)
+    return [tuple(Share(name, name, float(s)) for name, s in zip(names, row, strict=True)) for row in shares]
+
+
+def _completed(
+    model: Model, assembly: Assembly, check: Check, raw: Modes, modes: Sequence[FoundMode]
+) -> Check:
+    """Add the nearest mode, the separations and the drives to a check."""
+    elastic = [mode for mode in modes if mode.kind == ELASTIC]
+    band = check.band
+    excitation = (band.excitation[0] / RAD_PER_HZ, band.excitation[1] / RAD_PER_HZ)
+    now = nearest(((m.number, (m.frequency_hz, m.frequency_hz)) for m in elastic), excitation)
+    if now is None:
+        return check
+    widened = (
+        band.tolerance[0] / (1 - band.margin[0]) / RAD_PER_HZ,
+        band.tolerance[1] / (1 + band.margin[1]) / RAD_PER_HZ,
+    )
+    worst = nearest(((m.number, m.range_hz) for m in elastic), widened)
+    return replace(
+        check,
+        nearest_mode=now[0],
+        separation=now[1],
+        worst_separation=worst[1] if worst else None,
+        drives=_drives(model, assembly, check, raw, modes, now[0]),
+    )
+
+
+def _drives(
+    model: Model, assembly: Assembly, check: Check, raw: Modes, modes: Sequence[FoundMode], nearest_mode: int
+) -> tuple[ModeDrive, ...]:
+    """Return the drives of the modes that can lie in the band, or of the nearest one."""
+    machine = next(m for m in model.machines if m.id == check.band.machine)
+    excitation = next(e for e in machine.excitations if e.id == check.band.excitation_id)
+    drives = mode_drives(assembly.pencil(), raw, unit_force(assembly, excitation))
+    low, high = (edge / RAD_PER_HZ for edge in check.band.tolerance)
+    inside = [
+        mode.number
+        for mode in modes
+        if mode.kind == ELASTIC and mode.range_hz[1] >= low and mode.range_hz[0] <= high
+    ]
+    return tuple(drives[number - 1] for number in inside or [nearest_mode])
+
+
+def _evidence(raw: Modes, modes: Sequence[FoundMode]) -> tuple[str, ...]:
+    number = len(modes)
+    proven = {
+        True: "none missed (proven by counts)",
+        False: "counts disagree: do not rely on this",
+        None: "counts undecided",
+    }[raw.complete]
+    frequency = np.maximum(raw.frequency_hz, np.finfo(float).tiny)
+    worst = float((raw.numerical_error_hz / frequency)[raw.elastic].max(initial=0.0))
+    return (
+        f"{number} of {number} found, {proven}",
+        f"computed to ±{worst:.0e} of each frequency",
+        raw.method,
+        *raw.warnings,
+    )
