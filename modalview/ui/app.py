@@ -1,10 +1,11 @@
 """Starts the window."""
 
+import os
 import sys
 from collections.abc import Sequence
 from pathlib import Path
 
-from PySide6.QtCore import QTimer
+from PySide6.QtCore import QMessageLogContext, QTimer, QtMsgType, qInstallMessageHandler
 from PySide6.QtWidgets import QApplication
 
 from modalview.ui.failure import show_unexpected
@@ -29,9 +30,23 @@ def new_window(settings: Settings) -> Window:
     return window
 
 
-def run(file: Path | None) -> int:
-    """Show the window until it is closed; return the exit status."""
+def run(file: Path | None, without_screen: str) -> int:
+    """Show the window until it is closed; return the exit status.
+
+    Where Qt finds no screen to draw on it ends the process: ``without_screen`` is said then, with status 2.
+    """
+
+    def on_message(kind: QtMsgType, context: QMessageLogContext, text: str) -> None:
+        del context
+        sys.stderr.write(f"{text}\n")
+        if kind == QtMsgType.QtFatalMsg:
+            sys.stderr.write(without_screen)
+            sys.stderr.flush()
+            os._exit(2)
+
+    qInstallMessageHandler(on_message)
     program = application()
+    qInstallMessageHandler(None)
     sys.excepthook = show_unexpected
     window = new_window(kept_settings())
     program.styleHints().colorSchemeChanged.connect(window.apply_theme)

@@ -69,6 +69,7 @@ class Banner(QFrame):
         self.sign.show_verdict(verdict, self._theme)
         self.word.setText(word)
         self.word.setVisible(bool(word))
+        self.sign.setVisible(bool(word))
         self.word.setProperty("verdict", verdict or "none")
         self.word.style().polish(self.word)
         self.sentence.setText(sentence)

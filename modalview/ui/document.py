@@ -80,4 +80,3 @@ class Document(QObject):
         """Put an edited model in place; for the undo commands alone."""
         self.model = model
         self.model_changed.emit()
-

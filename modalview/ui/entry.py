@@ -2,7 +2,7 @@
 
 from collections.abc import Callable
 
-from PySide6.QtCore import QEvent, Qt, Signal
+from PySide6.QtCore import Qt, Signal
 from PySide6.QtGui import QKeyEvent
 from PySide6.QtWidgets import QGridLayout, QLabel, QLineEdit, QWidget
 
@@ -36,6 +36,7 @@ class EntryField(QWidget):
         self.label.setBuddy(self.line)
         self.converted = QLabel(self)
         self.converted.setProperty("role", "quiet")
+        self.converted.setMinimumWidth(9 * self.fontMetrics().averageCharWidth())
         self.reason = QLabel(self)
         self.reason.setProperty("role", "refusal")
         self.reason.setWordWrap(True)
@@ -87,9 +88,3 @@ class EntryField(QWidget):
         self.line.setProperty("refused", bool(reason))
         self.line.style().polish(self.line)
         self.line.setAccessibleDescription(reason)
-
-    def changeEvent(self, event: QEvent) -> None:  # noqa: N802  (Qt's name)
-        """Keep labels of one column as wide as the longest, whatever the text size."""
-        super().changeEvent(event)
-        if event.type() == QEvent.Type.FontChange:
-            self.label.setMinimumWidth(self.label.fontMetrics().horizontalAdvance("speed tolerance") + 4)

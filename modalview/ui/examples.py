@@ -44,5 +44,5 @@ _FIRST = ("as-built", "steel", "soft", "static", "design", "no-")
 def _example(path: Path) -> Example:
     tree = json.loads(path.read_text(encoding="utf-8"))
     story = str(tree.get("notes", ""))
-    sentence = story.split(". ")[0].rstrip(".")
+    sentence = story.split(". ", maxsplit=1)[0].rstrip(".")
     return Example(path, str(tree["title"]), path.stem.replace("-", " "), f"{sentence}." if sentence else "")

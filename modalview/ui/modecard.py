@@ -106,7 +106,9 @@ class ModeCard(QStyledItemDelegate):
         shares = mode.strain[:_BARS] if mode.kind == "elastic" else ()
         top = inner.bottom() - line * (1 + len(shares))
         for row, share in enumerate(shares):
-            self._paint_bar(painter, QRectF(inner.left(), top + row * line, inner.width(), line), share, small)
+            self._paint_bar(
+                painter, QRectF(inner.left(), top + row * line, inner.width(), line), share, small
+            )
         if mode.kinetic:
             lead = mode.kinetic[0]
             place = QRectF(inner.left(), inner.bottom() - line, inner.width(), line)
@@ -118,11 +120,15 @@ class ModeCard(QStyledItemDelegate):
         metrics = QFontMetricsF(font)
         label = 0.46 * row.width()
         figure = metrics.horizontalAdvance("100 %") + 4
-        self._write(painter, QRectF(row.left(), row.top(), label, row.height()), share.label, self._theme.quiet, font)
+        self._write(
+            painter, QRectF(row.left(), row.top(), label, row.height()), share.label, self._theme.quiet, font
+        )
         track = QRectF(row.left() + label + 6, row.center().y() - 3, row.width() - label - figure - 6, 6)
         painter.fillRect(track, QColor(self._theme.line))
         painter.fillRect(
-            QRectF(track.topLeft(), track.bottomRight()).adjusted(0, 0, -track.width() * (1 - share.fraction), 0),
+            QRectF(track.topLeft(), track.bottomRight()).adjusted(
+                0, 0, -track.width() * (1 - share.fraction), 0
+            ),
             QColor(self._theme.accent),
         )
         self._write(painter, row, percent(share.fraction), self._theme.quiet, font, _RIGHT)
@@ -144,7 +150,7 @@ class ModeCard(QStyledItemDelegate):
         painter.translate(-place.topLeft())
 
     @staticmethod
-    def _write(  # noqa: PLR0913  (a text has a place, a colour, a font and a side)
+    def _write(
         painter: QPainter,
         place: QRectF,
         text: str,

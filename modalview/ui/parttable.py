@@ -163,7 +163,10 @@ class PartTable(QTableView):
         self.setSelectionMode(QAbstractItemView.SelectionMode.SingleSelection)
         triggers = QAbstractItemView.EditTrigger
         self.setEditTriggers(
-            triggers.DoubleClicked | triggers.EditKeyPressed | triggers.AnyKeyPressed | triggers.SelectedClicked
+            triggers.DoubleClicked
+            | triggers.EditKeyPressed
+            | triggers.AnyKeyPressed
+            | triggers.SelectedClicked
         )
         self.verticalHeader().hide()
         head = self.horizontalHeader()
@@ -179,12 +182,13 @@ class PartTable(QTableView):
         self.lines.show_model(model, anew=anew)
         if anew:
             self.fit_columns()
+            self.setCurrentIndex(self.lines.index(0, TYPED))
 
     def fit_columns(self) -> None:
         """Make columns and lines as large as the text needs."""
         wide = self.fontMetrics().averageCharWidth()
         self.verticalHeader().setDefaultSectionSize(round(1.55 * self.fontMetrics().height()))
-        for column, characters in ((PART, 24), (WHAT, 16), (TYPED, 22), (TOLERANCE, 20)):
+        for column, characters in ((PART, 22), (WHAT, 22), (TYPED, 20), (TOLERANCE, 17)):
             self.setColumnWidth(column, characters * wide)
 
     def choose_part(self, part_id: str) -> None:

@@ -4,7 +4,16 @@ from typing import Any
 
 from PySide6.QtCore import QEvent, QSize, Signal
 from PySide6.QtGui import QHelpEvent, QPainter, QPaintEvent, QPixmap, QResizeEvent
-from PySide6.QtWidgets import QCheckBox, QFrame, QHBoxLayout, QLabel, QSizePolicy, QToolTip, QVBoxLayout, QWidget
+from PySide6.QtWidgets import (
+    QCheckBox,
+    QFrame,
+    QHBoxLayout,
+    QLabel,
+    QSizePolicy,
+    QToolTip,
+    QVBoxLayout,
+    QWidget,
+)
 
 from modalview.ui.canvas import painted
 from modalview.ui.theme import LIGHT, Theme

@@ -34,11 +34,16 @@ class Setting:
 
 
 AUTOMATIC = Setting(
-    "find_modes_automatically", bool, True, "Models of up to 300 coordinates find their modes after each edit."
+    "find_modes_automatically",
+    bool,
+    True,
+    "Find modes after each edit, to 300 coordinates.",
 )
-THEME = Setting("theme", str, "system", "Light or dark, or as the system has it.", ("system", "light", "dark"))
+THEME = Setting(
+    "theme", str, "system", "Light or dark, or as the system has it.", ("system", "light", "dark")
+)
 TEXT_SIZE = Setting("text_percent", int, 100, "Size of all text, of the system's own.", TEXT_PERCENTS)
-MOVE = Setting("modes_move", bool, True, "The chosen mode moves on the sheet; off shows it at its largest.")
+MOVE = Setting("modes_move", bool, True, "The chosen mode moves; off shows it at its largest.")
 AMPLITUDE = Setting("amplitude_percent", int, 60, "How far the chosen mode moves on the sheet.")
 DISCS = Setting("show_discs", bool, True, "Gershgorin bounds stand on the frequency scale.")
 GEOMETRY = Setting("window_geometry", QByteArray, QByteArray(), "Where the window stood.")

@@ -24,7 +24,7 @@ def verdict_colour(verdict: str | None, theme: Theme) -> str:
 
 
 def paint_sign(painter: QPainter, box: QRectF, verdict: str | None, theme: Theme) -> None:
-    """Paint a circle with a tick, a triangle with a stroke, a square with a cross, or a circle with a dash."""
+    """Paint a ticked circle, a triangle with a stroke, a crossed square, or a circle with a dash."""
     size = box.width()
     painter.setRenderHint(QPainter.RenderHint.Antialiasing)
     painter.setPen(QPen(QColor(verdict_colour(verdict, theme)), max(1.6, size / 11)))
@@ -39,7 +39,9 @@ def paint_sign(painter: QPainter, box: QRectF, verdict: str | None, theme: Theme
         painter.drawEllipse(edge)
     x, y = box.left(), box.top()
     lines = _INSIDE.get(verdict or "", _DASH)
-    painter.drawLines([QLineF(x + a * size, y + b * size, x + c * size, y + d * size) for a, b, c, d in lines])
+    painter.drawLines(
+        [QLineF(x + a * size, y + b * size, x + c * size, y + d * size) for a, b, c, d in lines]
+    )
 
 
 class VerdictSign(QWidget):

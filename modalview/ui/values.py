@@ -13,6 +13,8 @@ from modalview.units.show import show, significant
 
 # The story is prose and stands beside the results; the system of units is no value of a part.
 _NOT_IN_TABLE = ("notes", "units")
+# What of a machine stands in the results, to be changed while looking at the verdict.
+_IN_FORM = ("speed", "speed_tolerance", "margin")
 _MASS_LIKE = (q.MASS, q.INERTIA, q.PRODUCT_OF_INERTIA)
 
 
@@ -71,19 +73,18 @@ def converted(si: float, quantity: Quantity) -> str:
 
 
 def value_rows(model: Model) -> list[ValueRow]:
-    """Return every line of the parts table, in the order of the file."""
+    """Return every line of the parts table: parts in the order of the file, the model's own at the end."""
     return list(_all_rows(model))
 
 
 def machine_rows(model: Model, machine: Machine) -> list[ValueRow]:
-    """Return the lines of a machine itself, without its excitations and its name."""
+    """Return the lines of a machine that decide its bands: speed and margin."""
     rows = _rows_of(model, ("machines", machine.id), machine.name or machine.id, machine.id)
-    return [row for row in rows if row.what != "name"]
+    return [row for row in rows if row.address[2] in _IN_FORM]
 
 
 def _all_rows(model: Model) -> Iterator[ValueRow]:
-    yield from _rows_of(model, (), "model", "")
-    for kind in ("bodies", "supports", "links", "machines"):
+    for kind in ("bodies", "links", "supports", "machines"):
         for part in getattr(model, kind):
             address = (kind, part.id)
             yield from _rows_of(model, address, part.name or part.id, part.id)
@@ -93,6 +94,7 @@ def _all_rows(model: Model) -> Iterator[ValueRow]:
     for kind in ("measured", "limits"):
         for part in getattr(model, kind):
             yield from _rows_of(model, (kind, part.id), part.id, part.id)
+    yield from _rows_of(model, (), "model", "")
 
 
 def _rows_of(model: Model, address: Address, part: str, part_id: str) -> Iterator[ValueRow]:

@@ -19,9 +19,9 @@ from modalview.ui.examples import Example
 from modalview.ui.theme import LIGHT, Theme
 
 _JOB = (
-    "Draw up the machine and what carries it as masses and springs in a model file. Keepclear shows where its "
-    "natural frequencies can and cannot lie, and proves over all tolerances whether a speed or an order of the "
-    "machine meets one."
+    "Draw up the machine and what carries it as masses and springs in a model file. Keepclear shows where "
+    "its natural frequencies can and cannot lie, and proves over all tolerances whether a speed or an order "
+    "of the machine meets one."
 )
 
 
@@ -47,7 +47,7 @@ class ExampleButton(QAbstractButton):
         self.update()
 
     def hasHeightForWidth(self) -> bool:  # noqa: N802  (Qt's name)
-        """The sentence wraps."""
+        """Return True: the sentence wraps."""
         return True
 
     def heightForWidth(self, width: int) -> int:  # noqa: N802  (Qt's name)
@@ -128,7 +128,7 @@ class Welcome(QScrollArea):
             column.addWidget(_text("Or open an example and change its values", "heading", inside))
             column.addLayout(self._grid())
             column.addWidget(
-                _text("Each comes in several variants: File, Open example. All are invented.", "quiet", inside)
+                _text("Each comes in variants: see File, Open example. All are invented.", "quiet", inside)
             )
         column.addStretch(1)
         frame = QWidget(self)

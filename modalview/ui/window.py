@@ -227,7 +227,7 @@ class Window(QMainWindow):
         self._show_model(anew=True)
 
     def on_model_changed(self) -> None:
-        """The model was edited: sheet and tables follow at once, scale and verdict as soon as counted."""
+        """Let sheet and tables follow at once, scale and verdict as soon as counted."""
         self._show_model(anew=False)
 
     def _show_model(self, *, anew: bool) -> None:
@@ -243,7 +243,7 @@ class Window(QMainWindow):
         self.sheet.show_title(furniture.title_lines(self.document.model, checked=checked, freedoms=freedoms))
 
     def on_saved(self) -> None:
-        """The file's name may be new."""
+        """Show the file's name, which may be new."""
         self.show_document()
 
     # What is known
@@ -254,7 +254,7 @@ class Window(QMainWindow):
         outlook = self.analysis.outlook
         self.scale.canvas.show_results(outlook, solution)
         if outlook is not None:
-            self._show_title(str(outlook.verdict or "nothing to check"), outlook.assembly.pencil.n)
+            self._show_title(str(outlook.verdict or "nothing to check"), outlook.assembly.pencil().n)
         self.banner.show_analysis(self.analysis)
         self.results.show_results()
         self.status.show_state(self.document, self.analysis)
@@ -281,7 +281,7 @@ class Window(QMainWindow):
         self.play_bar.move(12, self.sheet.height() - self.play_bar.height() - 10)
 
     def on_failed(self, error: Exception) -> None:
-        """The program made an error while studying: tell, and go on."""
+        """Tell of an error the program made while studying, and go on."""
         lead = "An unexpected error came up while the model was studied. The model and the window are kept."
         TextDialog("Unexpected error", lead, error_text(error), self).open()
 

@@ -63,7 +63,7 @@ class Study:
     """The doors of the core, as `modalview.study` has them."""
 
     request: Callable[..., Any]
-    look: Callable[[Any], Any]
+    look: Callable[[Any, Any], Any]
     solve: Callable[[Any], Any]
 
 
@@ -83,6 +83,7 @@ class _Desk(QObject):
     def __init__(self, load: Callable[[], Study]) -> None:
         super().__init__()
         self._load = load
+        self._previous: Any = None
 
     @Slot()
     def on_started(self) -> None:
@@ -114,9 +115,9 @@ class _Desk(QObject):
             cancelled=order.stop.is_set,
             progress=lambda what, share: self._answer(order, Step.PROGRESSED, (what, share)),
         )
-        outlook = study.look(request)
+        outlook = self._previous = study.look(request, self._previous)
         self._answer(order, Step.LOOKED, outlook)
-        small = outlook.assembly.pencil.n <= SMALL_MODEL
+        small = outlook.assembly.pencil().n <= SMALL_MODEL
         if order.find is Find.ALWAYS or (order.find is Find.IF_SMALL and small):
             self._answer(order, Step.FINDING)
             self._answer(order, Step.SOLVED, study.solve(request))
