@@ -13,13 +13,14 @@ def direction_vector(direction: Direction, places: Places) -> Vector:
     """Return a direction as a vector, not of unit length.
 
     "x", "-y" and components stay exact; "30 deg" (from +x towards +y) is rounded to stored doubles.
+    "rx" of a torque is the axis it turns about.
     """
     if not isinstance(direction, str):
         return places.vector(direction)
     name = direction.strip().replace("−", "-")
     sign, axis = (-1, name[1:]) if name.startswith("-") else (1, name.removeprefix("+"))
-    if axis in AXES:
-        x, y, z = AXES[axis]
+    if axis.removeprefix("r") in AXES:
+        x, y, z = AXES[axis.removeprefix("r")]
         return (sign * x, sign * y, sign * z)
     angle = read(name, ANGLE)
     return places.vector((math.cos(angle), math.sin(angle)))

@@ -138,11 +138,8 @@ def _mount(given: Mount, context: Context) -> Findings:
     yield from axes("axes", given.axes, context)
     if given.stiffness in (None, MountStiffness()) and given.damping in (None, MountDamping()):
         yield "stiffness", f"a mount needs stiffness or damping in {' or '.join(context.freedoms)}"
-    own = given.axes
-    if own is not None and context.motion is Motion.SPACE and (own.x is None or own.y is None):
-        yield "axes", "in space a mount's axes need both x and y; z follows"
-    elif own is not None and own.x is None and own.y is None:
-        yield "axes", "need x or y"
+    if given.axes is not None and given.axes.x is None and given.axes.y is None:
+        yield "axes", "need x or y; the missing one is taken level, square to the other"
 
 
 def _shaft(given: Shaft, context: Context) -> Findings:
@@ -169,7 +166,7 @@ def gear_ratio(given: Gear) -> Fraction | None:
         return Fraction(int(plain[1]), below) or None if plain and below else None
     if given.ratio is None or not 1e-9 < abs(given.ratio) < 1e9:
         return None
-    return Fraction(given.ratio)
+    return Fraction(str(given.ratio))  # as typed: 4.2 is 21/5, not the nearest binary number
 
 
 def _gear(given: Gear, context: Context) -> Findings:

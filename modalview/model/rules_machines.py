@@ -84,13 +84,11 @@ def _excitation(given: Excitation, owner: Machine, context: Context) -> Findings
     yield from _margin("margin", given.margin)
     if given.at is not None:
         yield from end("at", given.at, context)
-    turning = (
-        given.magnitude is None or given.magnitude.torque is not None or given.magnitude.motion is not None
-    )
-    yield from direction("direction", given.direction, context, rotating=True, turning=turning)
+    torque = given.magnitude is not None and given.magnitude.torque is not None
+    yield from direction("direction", given.direction, context, rotating=True, turning=torque)
     yield from space_axis("axis", given.axis, context)
-    if given.axis is not None and given.direction != "rotating":
-        yield "axis", 'belongs to the direction "rotating"'
+    if given.axis is not None and not torque and given.direction != "rotating":
+        yield "axis", 'belongs to a torque or to the direction "rotating"'
     if given.magnitude is not None:
         yield from _magnitude(given, given.magnitude, owner, context)
 

@@ -52,10 +52,10 @@ def measured(given: MeasuredPeak, context: Context) -> Findings:
     yield from not_negative("uncertainty", given.uncertainty)
     if given.at is not None:
         yield from end("at", given.at, context)
-    yield from direction("direction", given.direction, context, turning=True)
+    yield from direction("direction", given.direction, context)
     for number, point in enumerate(given.shape):
         yield from end(f"shape[{number}] . at", point.at, context)
-        yield from direction(f"shape[{number}] . direction", point.direction, context, turning=True)
+        yield from direction(f"shape[{number}] . direction", point.direction, context)
         if math.isinf(point.amplitude):
             yield f"shape[{number}] . amplitude", "must be a finite number"
 

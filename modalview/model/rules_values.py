@@ -137,7 +137,7 @@ def direction(
 ) -> Findings:
     """Yield what is wrong with a direction.
 
-    ``rotating`` permits the word, ``turning`` permits rotations such as "rz".
+    ``rotating`` permits the word, ``turning`` permits rotations such as "rz": the direction of a torque.
     """
     if given is None:
         return
@@ -153,8 +153,9 @@ def direction(
 
 
 def _letters(context: Context, *, turning: bool) -> tuple[str, ...]:
-    turning = turning or context.motion is Motion.SHAFT_TRAIN
-    return tuple(one for one in context.freedoms if turning or not one.startswith("r"))
+    if turning or context.motion is Motion.SHAFT_TRAIN:
+        return context.freedoms
+    return tuple(one for one in context.freedoms if not one.startswith("r"))
 
 
 def _is_angle(text: str, context: Context) -> bool:
