@@ -64,13 +64,13 @@ def judge(band: Band, count: BandCount, exactness: Exactness) -> Check:
 
 
 def _in_band(band: Band, count: BandCount) -> Check:
+    undecided: tuple[str, ...] = ()
     if count.inside is None:
         reason = f"rounding leaves undecided whether a mode lies within {band_text(band)}; taken as one"
         undecided = ("nominal",)
     else:
         always = ", at any value within tolerance" if count.certain else ""
         reason = f"{modes_text(count.inside)} within {band_text(band)}{always}"
-        undecided = ()
     return _check(band, count, Verdict.IN_BAND, Verdict.IN_BAND.value, reason, undecided)
 
 

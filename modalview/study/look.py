@@ -57,11 +57,12 @@ def look(request: Request, previous: Outlook | None = None) -> Outlook:
 
 def _checks(request: Request, assembly: Assembly) -> tuple[Check, ...]:
     exactness = Exactness(assembly.taken_as_exact, sum(p.family != "damping" for p in assembly.parameters))
-    cases = [assembly.pencil(case) for case in Case]
+    nominal, soft, stiff = (assembly.pencil(case) for case in Case)
     found = []
     for band in bands(request.model):
         _stop_if(request)
-        found.append(judge(band, count_band(*cases, band.nominal, band.tolerance), exactness))
+        count = count_band(nominal, soft, stiff, band.nominal, band.tolerance)
+        found.append(judge(band, count, exactness))
     return tuple(found)
 
 
