@@ -16,6 +16,8 @@ from check_bank import Figure, cases, figures
 
 from modalview.assembly.parameters import Case
 from modalview.assembly.pencil import Pencil, pencil_of_terms
+from modalview.bounds.discs import Discs, discs_of
+from modalview.bounds.forms import forms_of
 from modalview.eigen.intervals import _Run, _tightened
 from modalview.eigen.modes import Modes
 from modalview.eigen.rayleigh import ROOT_SLACK, Energy, Rayleigh
@@ -24,7 +26,33 @@ from modalview.errors import FileFaultsError
 from modalview.factor.counts import count_at_most, count_below, count_negative
 from modalview.store import parse_model
 
+ROWS, COLUMNS, SYMMETRIC = range(3)
+
 # --- discs -------------------------------------------------------------------------------------------
+
+
+def discs(found: Solved) -> tuple[Discs, Discs, Discs]:
+    """By rows and by columns of M^-1 K, and of the symmetric form."""
+    three = discs_of(found.pencil, forms_of(found.pencil))
+    assert three is not None
+    return three
+
+
+def intervals(kind: int, found: Solved, _: Any) -> list[list[float]]:
+    each = discs(found)[kind]
+    ends = zip(each.centres - each.radii, each.centres + each.radii, strict=True)
+    return [[float(low), float(high)] for low, high in ends]
+
+
+def all_inside(kinds: tuple[int, ...], found: Solved, _: Any) -> bool:
+    """Every eigenvalue lies in a group, and each group holds as many as it has discs."""
+    values = found.modes.eigenvalues
+    return all(
+        int(np.sum((group.low <= values) & (values <= group.high))) == group.number
+        for kind in kinds
+        for group in discs(found)[kind].groups
+    )
+
 
 # --- counts ------------------------------------------------------------------------------------------
 
@@ -168,6 +196,12 @@ def pendulum(stiffness: float) -> Modes:
 
 
 OWN = {
+    "G01-lower": lambda found, _: min(low for low, _high in intervals(ROWS, found, _)),
+    "G01-upper": lambda found, _: max(high for _low, high in intervals(ROWS, found, _)),
+    "G01-all_inside": partial(all_inside, (ROWS, COLUMNS, SYMMETRIC)),
+    "G09-rows_of_MinvK": partial(intervals, ROWS),
+    "G09-symmetric_scaling": partial(intervals, SYMMETRIC),
+    "G09-all_inside_both": partial(all_inside, (ROWS, SYMMETRIC)),
     "G02-number_below": number_below_shifts,
     "G02-leading_minors_at_4": partial(leading_minors, 4.0),
     "G02-leading_minors_at_6": partial(leading_minors, 6.0),
