@@ -1,5 +1,6 @@
 """What the sheet writes beside a part: names and values as typed, with their tolerance."""
 
+from modalview.drawing.primitives import Size
 from modalview.drawing.textsize import text_width
 from modalview.model.parts import (
     Beam,
@@ -98,16 +99,16 @@ def excitation_line(excitation: Excitation) -> str:
     return ", ".join(words)
 
 
-def shortened(text: str, room: float, text_scale: float = 1.0) -> str:
+def shortened(text: str, room: float, size: Size = Size.NORMAL, text_scale: float = 1.0) -> str:
     """Cut a text so that it fits into a width in pixels, ending in an ellipsis.
 
     >>> shortened("baseplate of the pump", 70.0)
     'baseplat…'
     """
-    if text_width(text, text_scale=text_scale) <= room:
+    if text_width(text, size, text_scale=text_scale) <= room:
         return text
     kept = text
-    while kept and text_width(kept + "…", text_scale=text_scale) > room:
+    while kept and text_width(kept + "…", size, text_scale=text_scale) > room:
         kept = kept[:-1]
     return kept.rstrip() + "…"
 

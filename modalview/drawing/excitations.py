@@ -11,7 +11,7 @@ from modalview.drawing.labels import Spot, round_about
 from modalview.drawing.layout import point
 from modalview.drawing.primitives import Floats
 from modalview.drawing.symbols import arrow, turning_arrow
-from modalview.model.parts import Excitation, Motion
+from modalview.model.parts import Excitation, Model, Motion
 
 LENGTH = 40.0  # pixels of a straight arrow
 MOST_LINES = 4  # of text at one place
@@ -23,6 +23,9 @@ class Push:
 
     Parameters
     ----------
+    body : int
+    on_body : bool
+        Whether the arrow is at a place on the body, not beside it.
     segments : array (n, 4)
         The arrow.
     box : array (1, 4)
@@ -32,10 +35,18 @@ class Push:
         Where the texts may stand, best first.
     """
 
+    body: int
+    on_body: bool
     segments: Floats
     box: Floats
     texts: tuple[str, ...]
     spots: tuple[Spot, ...]
+
+
+def lines_above(model: Model) -> int:
+    """Return the largest number of excitations at one body, as lines of text."""
+    at = [e.at.body for machine in model.machines for e in machine.excitations if e.at is not None]
+    return min(max((at.count(body) for body in at), default=0), MOST_LINES)
 
 
 def pushes(geometry: SheetGeometry) -> tuple[Push, ...]:
@@ -77,17 +88,19 @@ def _push(geometry: SheetGeometry, body: int, arm: Floats, way: str | Floats, te
     x1, y1, x2, y2 = geometry.boxes[body].tolist()
     middle = (x1 + x2) / 2
     around = round_about((x1, y1, x2 - x1, y2 - y1), 8.0)
-    turning = isinstance(way, str) and way == "rotating"
+    on_body = bool(arm.any()) or (geometry.model.motion is Motion.SPACE and _turns(way))
+    turning = _turns(way)
     if geometry.train is not None:
         segments = turning_arrow((middle, y2 - 8.0), 22.0, np.radians(205), np.radians(130))
         spots = [Spot(middle, y2 + step, 0, 1) for step in range(22, 160, 8)]
         spots += [Spot(middle, y1 - step, 0, -1) for step in range(8, 160, 8)]
-    elif arm.any():  # a place on the body: the arrow is there, the text beside the body
+    elif on_body:  # a place on the body: the arrow is there, the text beside the body
         here = geometry.points.rest[geometry.centres[body]] + geometry.view.steps(arm)
         segments = _at_place(here, None if turning else _step(geometry, way))
+        segments = segments if arm.any() else segments[2:]  # the centre of gravity has its own mark
         spots = [Spot(float(here[0]), y1 - 8, 0, -1), Spot(middle, y1 - 22, 0, -1), *around]
     elif turning:
-        half = min(0.36 * (x2 - x1), 60.0)
+        half = min(0.36 * (x2 - x1), 46.0)
         radius = half / np.sin(np.radians(60))
         segments = turning_arrow((middle, y1 - 12 + radius / 2), radius, np.radians(150), np.radians(-120))
         spots = [Spot(middle, y1 - 18 - radius / 2, 0, -1), *around]
@@ -98,14 +111,25 @@ def _push(geometry: SheetGeometry, body: int, arm: Floats, way: str | Floats, te
         spots = [Spot(middle + 10, y1 - 30, 1, 0), Spot(middle - 10, y1 - 30, -1, 0)]
         spots += [Spot(middle, y1 - 16 - LENGTH, 0, -1), *around]
     ends = segments.reshape(-1, 2)
-    return Push(segments, np.array([[*ends.min(axis=0), *ends.max(axis=0)]]), texts, tuple(spots))
+    return Push(
+        body,
+        on_body and geometry.train is None,
+        segments,
+        np.array([[*ends.min(axis=0), *ends.max(axis=0)]]),
+        texts,
+        tuple(spots),
+    )
+
+
+def _turns(way: str | Floats) -> bool:
+    return isinstance(way, str) and way == "rotating"
 
 
 def _at_place(here: Floats, step: Floats | None) -> Floats:
     x, y = here.tolist()
     cross = np.array([[x - 4, y, x + 4, y], [x, y - 4, x, y + 4]])
     if step is None:
-        return np.vstack([cross, turning_arrow((x, y), 16.0, np.radians(200), np.radians(-270))])
+        return np.vstack([cross, turning_arrow((x, y), 18.0, np.radians(200), np.radians(-270))])
     return np.vstack([cross, arrow(here[None], step[None] * LENGTH)])
 
 

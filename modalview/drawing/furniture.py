@@ -13,7 +13,7 @@ from modalview.model.parts import FREEDOMS, Model, Motion
 
 GRID_STEP = 24.0
 MARGIN = 12.0
-TITLE_SHARE = 0.6  # of the block, for the left column
+TITLE_SHARE = 0.64  # of the block, for the left column
 
 
 @dataclass(frozen=True, slots=True)
@@ -49,7 +49,7 @@ def title_lines(model: Model, *, checked: str = "not yet", freedoms: int | None 
 def title_size(title: str, sheet_width: float, text_scale: float) -> tuple[float, float]:
     """Return width and height of the title block in pixels: wide enough for the title, to half the sheet."""
     need = (text_width(title, text_scale=text_scale) + 20.0) / TITLE_SHARE
-    width = min(max(need, 290.0 * text_scale), max(0.56 * sheet_width, 200.0), sheet_width - 2 * MARGIN)
+    width = min(max(need, 290.0 * text_scale), max(0.6 * sheet_width, 200.0), sheet_width - 2 * MARGIN)
     return width, 68.0 * text_scale
 
 
@@ -71,9 +71,10 @@ def title_block(lines: TitleLines, sheet_width: float, text_scale: float) -> tup
     )
     for name, text, x, y, room in cells:
         inner = room - 14.0
+        size = Size.NORMAL if text_width(text, text_scale=text_scale) <= inner else Size.SMALL
         items += [
             Text(x + 8, y + 9.0 * text_scale, name, Role.MUTED, Size.SMALL),
-            Text(x + 8, y + 24.0 * text_scale, shortened(text, inner, text_scale), Role.INK),
+            Text(x + 8, y + 24.0 * text_scale, shortened(text, inner, size, text_scale), Role.INK, size),
         ]
     return tuple(items)
 

@@ -17,7 +17,7 @@ Indices = np.ndarray[tuple[int, ...], np.dtype[np.int_]]
 # Pixels between neighbours of a model whose distances carry no meaning.
 LARGEST_STEP = (270.0, 175.0)
 LARGEST_ROW = 110.0  # the same between parallel shafts
-TWIST = 30.0  # pixels of the largest rotation beside a shaft
+TWIST = 24.0  # pixels of the largest rotation beside a shaft
 ROUNDS = 3  # of fitting: sizes follow the scale, the scale follows the sizes
 
 
@@ -42,11 +42,23 @@ class Points:
 
 @dataclass(frozen=True, slots=True, eq=False)
 class LinkGroup:
-    """Links of one symbol; ``ends`` (n, 2) are indices of points."""
+    """Links of one symbol.
+
+    Parameters
+    ----------
+    symbol : Symbol
+    ends : array (n, 2) of int
+        Indices of points.
+    on_top : bool
+        Drawn over the bodies.
+    joint : bool
+        Between two touching bodies.
+    """
 
     symbol: Symbol
     ends: Indices
     on_top: bool
+    joint: bool
 
 
 @dataclass(frozen=True, slots=True, eq=False)
@@ -94,6 +106,10 @@ class SheetGeometry:
         The same of the face that carries the name.
     link_ends : array (links, 2, 2)
         Pixels, in the order of the model.
+    link_bodies : array (links, 2) of int
+        Bodies of the ends; GROUND for none.
+    links_on_top : array (links,) of bool
+        Links drawn over the bodies.
     train : Train or None
         In a shaft train.
     reach : float
@@ -101,7 +117,11 @@ class SheetGeometry:
     labels, body_labels : tuple of Text, tuple of (body, Text)
         Laid out texts; those of bodies move with them.
     arrows : array (n, 4)
-        Excitations, pixels.
+        Excitations beside bodies, pixels.
+    body_arrows : tuple of (body, array (n, 4))
+        Excitations at places on bodies; they move with them.
+    leaders : array (n, 4)
+        Lines from texts to the links they belong to, where they stand apart.
     unlabelled : tuple of str
         Ids of parts whose label found no room.
     """
@@ -120,11 +140,14 @@ class SheetGeometry:
     fronts: Floats
     link_ends: Floats
     link_bodies: Indices
+    links_on_top: np.ndarray[tuple[int], np.dtype[np.bool_]]
     train: Train | None
     reach: float
     labels: tuple[Text, ...] = ()
     body_labels: tuple[tuple[int, Text], ...] = ()
     arrows: Floats | None = None
+    body_arrows: tuple[tuple[int, Floats], ...] = ()
+    leaders: Floats | None = None
     unlabelled: tuple[str, ...] = ()
 
 
@@ -196,6 +219,7 @@ def bare_geometry(
         fronts=fronts,
         link_ends=links.ends,
         link_bodies=places.end_bodies,
+        links_on_top=links.on_top,
         train=train,
         reach=_reach(links, train, grow),
     )
@@ -280,14 +304,11 @@ def _collect_links(
     indices = collector.add(links.ends, arms, places.end_bodies).reshape(-1, 2)
     groups = []
     for symbol in Symbol:
-        for on_top in (False, True):
-            chosen = [
-                number
-                for number, found in enumerate(links.symbols)
-                if found is symbol and links.on_top[number] == on_top
-            ]
-            if chosen:
-                groups.append(LinkGroup(symbol, indices[chosen], on_top))
+        same = np.array([found is symbol for found in links.symbols])
+        for on_top, joint in ((False, False), (True, False), (True, True)):
+            chosen = np.flatnonzero(same & (links.on_top == on_top) & (links.joints == joint))
+            if len(chosen):
+                groups.append(LinkGroup(symbol, indices[chosen], on_top, joint))
     return tuple(groups)
 
 
@@ -322,5 +343,5 @@ def _reach(links: LinkEnds, train: Train | None, grow: float) -> float:
     """Return pixels of the largest motion: readable, and short of turning springs inside out."""
     if train is not None:
         return TWIST * grow
-    lengths = np.hypot(*(links.ends[~links.on_top, 1] - links.ends[~links.on_top, 0]).T)
+    lengths = np.hypot(*(links.ends[~links.joints, 1] - links.ends[~links.joints, 0]).T)
     return float(np.clip(0.42 * lengths.min(initial=70.0 * grow), 9.0 * grow, 28.0 * grow))

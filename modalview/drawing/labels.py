@@ -98,6 +98,20 @@ class Board:
         return texts
 
 
+def extent(texts: list[Text], text_scale: float) -> tuple[float, float, float, float]:
+    """Return x1, y1, x2, y2 of texts on the sheet, pixels."""
+    left, right, top, bottom = [], [], [], []
+    for text in texts:
+        width = text_width(text.text, text.size, bold=text.bold, text_scale=text_scale)
+        half = line_height(text.size, text_scale=text_scale) / 2
+        start = text.x - {Anchor.LEFT: 0.0, Anchor.MIDDLE: 0.5, Anchor.RIGHT: 1.0}[text.anchor] * width
+        left.append(start)
+        right.append(start + width)
+        top.append(text.y - half)
+        bottom.append(text.y + half)
+    return min(left), min(top), max(right), max(bottom)
+
+
 def round_about(box: Rectangle, gap: float = 6.0) -> list[Spot]:
     """Return spots beside, above and below a rectangle, then further out."""
     x, y, width, height = box
@@ -117,13 +131,23 @@ def round_about(box: Rectangle, gap: float = 6.0) -> list[Spot]:
     return spots
 
 
+def ring_about(x: float, y: float) -> list[Spot]:
+    """Return spots on widening rings about a point, for what has found no room beside it."""
+    turns = np.radians(np.arange(0, 360, 20))
+    spots = []
+    for radius in (50, 70, 90, 115, 145, 180, 220):
+        for cosine, sine in zip(np.cos(turns).tolist(), np.sin(turns).tolist(), strict=True):
+            spots.append(Spot(x + radius * cosine, y + radius * sine, round(cosine), round(sine)))
+    return spots
+
+
 def along(start: Floats, stop: Floats, gap: float = 12.0) -> list[Spot]:
     """Return spots beside a link: at its middle first, then towards its ends, then further out."""
     step = stop - start
     upright = abs(step[1]) >= abs(step[0])
     spots = []
     for further in (gap, gap + 14, gap + 40):
-        for share in (0.5, 0.72, 0.28, 0.9, 0.1):
+        for share in (0.5, 0.6, 0.4, 0.72, 0.28, 0.9, 0.1):
             x, y = start + share * step
             sides = [(further, 0.0), (-further, 0.0)] if upright else [(0.0, -further), (0.0, further)]
             spots += [Spot(x + dx, y + dy, int(np.sign(dx)), int(np.sign(dy))) for dx, dy in sides]

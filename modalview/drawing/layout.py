@@ -52,8 +52,8 @@ def layout(model: Model) -> Layout:
     place = {Motion.SINGLE_AXIS: _upright_ends, Motion.SHAFT_TRAIN: _axial_ends}.get(model.motion, _true_ends)
     ends = place(model, centres, end_bodies)
     no_sizes = all(body.drawn is None for body in model.bodies)
-    along_one = model.motion in (Motion.SINGLE_AXIS, Motion.SHAFT_TRAIN)
-    return Layout(centres, ends, end_bodies, lanes, along_one and (no_sizes or not given))
+    upright = model.motion is Motion.SINGLE_AXIS and (no_sizes or not given)
+    return Layout(centres, ends, end_bodies, lanes, upright or model.motion is Motion.SHAFT_TRAIN)
 
 
 def point(place: Point | None) -> Floats:

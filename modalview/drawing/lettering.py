@@ -8,8 +8,8 @@ import numpy as np
 from modalview.drawing.captions import body_lines, link_lines
 from modalview.drawing.excitations import Push, pushes
 from modalview.drawing.furniture import MARGIN, axes, title_size
-from modalview.drawing.geometry import SheetGeometry
-from modalview.drawing.labels import Board, Line, Rectangle, Spot, along, round_about
+from modalview.drawing.geometry import TWIST, SheetGeometry
+from modalview.drawing.labels import Board, Line, Rectangle, Spot, along, extent, ring_about, round_about
 from modalview.drawing.layout import GROUND
 from modalview.drawing.primitives import Floats, Role, Size, Text
 from modalview.model.parts import Motion
@@ -19,6 +19,7 @@ MOST_LABELS = 120
 MOST_ALIKE = 2  # more links of one text than this are written once
 LINK_HALF = 9.0  # half the width that a symbol takes, pixels
 SAMPLES = 8  # rectangles along a link
+APART = 40.0  # pixels: a text further from its link has a leader
 SHORT = 110.0  # pixels: shorter links may be written at the side of the body they carry
 
 
@@ -26,6 +27,7 @@ SHORT = 110.0  # pixels: shorter links may be written at the side of the body th
 class _Letters:
     labels: list[Text]
     body_labels: list[tuple[int, Text]]
+    leaders: list[tuple[float, float, float, float]]
     unlabelled: list[str]
 
 
@@ -35,15 +37,17 @@ def lettered(geometry: SheetGeometry) -> SheetGeometry:
     acting = pushes(geometry)
     board.take(np.vstack([_taken(geometry), *(push.box for push in acting)]))
     inner.take(np.vstack([_taken_inside(geometry), *(push.box for push in acting)]))
-    letters = _Letters([], [], [])
+    letters = _Letters([], [], [], [])
     _name_bodies(geometry, board, inner, letters)
-    _name_pushes(acting, board, letters)
+    _name_pushes(geometry, acting, (board, inner), letters)
     _name_links(geometry, board, letters)
     return replace(
         geometry,
         labels=tuple(letters.labels),
         body_labels=tuple(letters.body_labels),
-        arrows=np.vstack([np.zeros((0, 4)), *(push.segments for push in acting)]),
+        arrows=np.vstack([np.zeros((0, 4)), *(push.segments for push in acting if not push.on_body)]),
+        body_arrows=tuple((push.body, push.segments) for push in acting if push.on_body),
+        leaders=np.array(letters.leaders).reshape(-1, 4),
         unlabelled=tuple(letters.unlabelled),
     )
 
@@ -59,7 +63,7 @@ def _taken(geometry: SheetGeometry) -> Floats:
         taken += [_arrow_room(geometry)]
     else:
         room = train.dial_radius + 6
-        taken += [np.hstack([train.dials - room, train.dials + room]), train.axes + [0.0, -2.0, 0.0, 2.0]]
+        taken += [np.hstack([train.dials - room, train.dials + room]), train.axes + [0.0, -TWIST, 0.0, TWIST]]
     return np.vstack(taken)
 
 
@@ -67,20 +71,21 @@ def _taken_inside(geometry: SheetGeometry) -> Floats:
     taken = [np.zeros((0, 4))]
     marks = geometry.points.rest[geometry.centres]
     if geometry.model.motion in (Motion.PLANE, Motion.SPACE):
-        taken.append(np.hstack([marks - 9.0, marks + 9.0]))
+        taken.append(np.hstack([marks - 14.0, marks + 14.0]))
     if geometry.model.motion is not Motion.SPACE:  # there the links inside are behind
         taken.append(_link_boxes(geometry))
+    else:
+        on_top = geometry.links_on_top
+        taken.append(_link_boxes(geometry).reshape(-1, SAMPLES, 4)[on_top].reshape(-1, 4))
     return np.vstack(taken)
 
 
 def _arrow_room(geometry: SheetGeometry) -> Floats:
     """Return the room beside each body for the arrows of its motion."""
-    x1, y1, x2, y2 = geometry.boxes.T
+    x1, y1, _, y2 = geometry.boxes.T
     middle = (y1 + y2) / 2
-    level = 26.0 if geometry.model.motion is Motion.SINGLE_AXIS else 56.0
-    beside = np.stack([x1 - level, middle - 22, x1, middle + 22], axis=1)
-    corner = np.stack([x2 - 9, y1 - 17, x2 + 17, y1], axis=1)
-    return beside if geometry.model.motion is Motion.SINGLE_AXIS else np.vstack([beside, corner])
+    level = 26.0 if geometry.model.motion is Motion.SINGLE_AXIS else 48.0
+    return np.stack([x1 - level, middle - 22, x1, middle + 22], axis=1)
 
 
 def _link_boxes(geometry: SheetGeometry) -> Floats:
@@ -142,9 +147,22 @@ def _by_disc(geometry: SheetGeometry, number: int) -> list[Spot]:
     return [*below, Spot(middle, y1 - room, 0, -1), Spot(x2 + 6, y1 - 4, 1, -1)]
 
 
-def _name_pushes(acting: tuple[Push, ...], board: Board, letters: _Letters) -> None:
+def _name_pushes(
+    geometry: SheetGeometry, acting: tuple[Push, ...], boards: tuple[Board, Board], letters: _Letters
+) -> None:
+    board, inner = boards
     for push in acting:
-        placed = board.place(tuple(Line(text, Role.WARN) for text in push.texts), list(push.spots))
+        lines = tuple(Line(text, Role.WARN) for text in push.texts)
+        if push.on_body:
+            x1, y1, x2, y2 = push.box[0].tolist()
+            within = _rectangle(geometry.fronts[push.body])
+            near = round_about((x1, y1, x2 - x1, y2 - y1), 4.0)
+            placed = inner.place(lines, near, within=within)
+            letters.body_labels += [(push.body, text) for text in placed]
+            if placed:
+                continue
+        x, y = push.box[0, 0], push.box[0, 1]
+        placed = board.place(lines, [*push.spots, *ring_about(float(x), float(y))])
         letters.labels += placed
         if not placed:
             letters.unlabelled.append(push.texts[0])
@@ -171,10 +189,23 @@ def _name_links(geometry: SheetGeometry, board: Board, letters: _Letters) -> Non
 def _name_link(
     geometry: SheetGeometry, board: Board, letters: _Letters, number: int, lines: tuple[Line, ...]
 ) -> None:
-    placed = board.place(lines, _beside(geometry, number))
-    letters.labels += placed
-    if not placed:
+    if not _placed_beside(geometry, board, letters, number, lines):
         letters.unlabelled.append(geometry.model.links[number].id)
+
+
+def _placed_beside(
+    geometry: SheetGeometry, board: Board, letters: _Letters, number: int, lines: tuple[Line, ...]
+) -> bool:
+    """Write lines by a link, with a leader where they stand apart; tell whether there was room."""
+    middle = geometry.link_ends[number].mean(axis=0)
+    placed = board.place(lines, _beside(geometry, number) + ring_about(*middle.tolist()))
+    letters.labels += placed
+    if placed:
+        x1, y1, x2, y2 = extent(placed, geometry.text_scale)
+        foot = np.clip(middle, (x1 - 3, y1), (x2 + 3, y2))
+        if np.hypot(*(foot - middle)) > APART:
+            letters.leaders.append((*foot.tolist(), *middle.tolist()))
+    return bool(placed)
 
 
 def _name_alike(
@@ -184,9 +215,7 @@ def _name_alike(
     kind = geometry.model.links[group[0]].kind
     lines = _link_label(f"{len(group)} alike: each {kind}", values)
     for number in group:
-        placed = board.place(lines, _beside(geometry, number))
-        if placed:
-            letters.labels += placed
+        if _placed_beside(geometry, board, letters, number, lines):
             return
     letters.unlabelled += [geometry.model.links[number].id for number in group]
 

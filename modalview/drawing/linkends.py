@@ -26,12 +26,15 @@ class LinkEnds:
     ends : array (links, 2, 2)
         Pixels.
     on_top : array (links,) of bool
-        Links between touching bodies, drawn over them.
+        Links that touch the front of a body, drawn over it.
+    joints : array (links,) of bool
+        Links between touching bodies, drawn over both.
     """
 
     symbols: tuple[Symbol, ...]
     ends: Floats
     on_top: np.ndarray[tuple[int], np.dtype[np.bool_]]
+    joints: np.ndarray[tuple[int], np.dtype[np.bool_]]
 
 
 def link_ends(model: Model, places: Layout, view: View, boxes: Floats, grow: float = 1.0) -> LinkEnds:
@@ -46,7 +49,8 @@ def link_ends(model: Model, places: Layout, view: View, boxes: Floats, grow: flo
     sideways = places.lanes[:, None] * LANE * grow * _across(ends)
     if model.motion is not Motion.SHAFT_TRAIN:
         ends += sideways[:, None]
-    on_top = np.zeros(len(ends), dtype=bool)
+    joints = np.zeros(len(ends), dtype=bool)
+    on_top = _in_front(places) if model.motion is Motion.SPACE else joints.copy()
     for number, link in enumerate(model.links):
         pair = places.end_bodies[number]
         if GROUND in pair:
@@ -54,14 +58,24 @@ def link_ends(model: Model, places: Layout, view: View, boxes: Floats, grow: flo
         elif np.hypot(*(ends[number, 1] - ends[number, 0])) < COINCIDENT * grow and not isinstance(
             link, RigidLink
         ):
-            on_top[number] = True
+            joints[number] = on_top[number] = True
             pull = _pull(link, model.motion)
             along = np.array([1.0, 0.0]) if pull is None else pull
             middle = ends[number].mean(axis=0)
             ends[number] = middle - JOINT * grow * along, middle + JOINT * grow * along
-        if model.motion is not Motion.SPACE and not on_top[number]:
+        if model.motion is not Motion.SPACE and not joints[number]:
             _clip(ends[number], pair, boxes)
-    return LinkEnds(tuple(_symbol(link, model.motion) for link in model.links), ends, on_top)
+    return LinkEnds(tuple(_symbol(link, model.motion) for link in model.links), ends, on_top, joints)
+
+
+def _in_front(places: Layout) -> np.ndarray[tuple[int], np.dtype[np.bool_]]:
+    """Return which links to the ground hold their body on the side towards the eye (least y)."""
+    front = np.zeros(len(places.ends), dtype=bool)
+    for number, pair in enumerate(places.end_bodies.tolist()):
+        for side in (0, 1):
+            if pair[side] != GROUND and pair[1 - side] == GROUND:
+                front[number] = places.ends[number, side, 1] < places.centres[pair[side], 1]
+    return front
 
 
 def _symbol(link: Link, motion: Motion) -> Symbol:

@@ -23,12 +23,14 @@ def part_items(geometry: SheetGeometry, points: Floats) -> tuple[Item, ...]:
     # Parts behind a body in space shimmer through, as hidden edges are told by faint lines.
     fill = 0.86 if geometry.model.motion is Motion.SPACE else 1.0
     bodies = [Polygons(points[indices], Role.INK, Role.PAPER, width, fill) for indices in geometry.faces]
+    over += ground_items(geometry, on_top=True)
     return (*under, *bodies, *over, *_marks(geometry, points), *_teeth(geometry))
 
 
-def ground_items(geometry: SheetGeometry) -> tuple[Item, ...]:
-    """Return the hatched ground under every foot; it looks away from the link."""
-    rows, sides = np.nonzero(geometry.link_bodies == GROUND)
+def ground_items(geometry: SheetGeometry, *, on_top: bool = False) -> tuple[Item, ...]:
+    """Return the hatched ground under the feet behind, or before, the bodies; it looks away from the link."""
+    chosen = geometry.links_on_top == on_top
+    rows, sides = np.nonzero((geometry.link_bodies == GROUND) & chosen[:, None])
     feet = geometry.link_ends[rows, sides]
     step = feet - geometry.link_ends[rows, 1 - sides]
     level = np.abs(step[:, 0]) > np.abs(step[:, 1])
@@ -75,16 +77,25 @@ def paper_items(geometry: SheetGeometry, title: TitleLines | None) -> tuple[Item
 
 
 def excitation_items(geometry: SheetGeometry) -> tuple[Item, ...]:
-    """Return the arrows of the excitations."""
+    """Return the arrows of the excitations that stand beside bodies."""
     return () if geometry.arrows is None else (Lines(geometry.arrows, Role.WARN, 2.0),)
 
 
+def leader_items(geometry: SheetGeometry) -> tuple[Item, ...]:
+    """Return the lines from texts to their links."""
+    return () if geometry.leaders is None else (Lines(geometry.leaders, Role.GHOST, 0.9),)
+
+
 def label_items(geometry: SheetGeometry, steps: Floats | None = None) -> tuple[Item, ...]:
-    """Return the bodies' texts, moved by ``steps`` (bodies, 2) in pixels."""
+    """Return what is written and drawn on bodies, moved by ``steps`` (bodies, 2) in pixels."""
     if steps is None:
-        return tuple(text for _, text in geometry.body_labels)
+        arrows = tuple(Lines(segments, Role.WARN, 2.0) for _, segments in geometry.body_arrows)
+        return (*arrows, *(text for _, text in geometry.body_labels))
     shifts = steps.tolist()
-    return tuple(
+    arrows = tuple(
+        Lines(segments + np.tile(steps[body], 2), Role.WARN, 2.0) for body, segments in geometry.body_arrows
+    )
+    return arrows + tuple(
         replace(text, x=text.x + shifts[body][0], y=text.y + shifts[body][1])
         for body, text in geometry.body_labels
     )
@@ -93,7 +104,7 @@ def label_items(geometry: SheetGeometry, steps: Floats | None = None) -> tuple[I
 def _link(geometry: SheetGeometry, group: LinkGroup, points: Floats) -> list[Item]:
     grow, symbol, ends = geometry.grow, group.symbol, points[group.ends]
     template, width = TEMPLATES[symbol]
-    if group.on_top:
+    if group.joint:
         template = JOINTS.get(symbol, template)
     items: list[Item] = [Lines(between(template, ends, grow), Role.INK, max(width * grow, 1.0))]
     if symbol is Symbol.RIGID:

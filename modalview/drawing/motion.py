@@ -13,6 +13,7 @@ from modalview.drawing.model_items import (
     ghost_items,
     ground_items,
     label_items,
+    leader_items,
     paper_items,
     part_items,
     train_items,
@@ -102,8 +103,7 @@ def frame(geometry: SheetGeometry, posed: Pose, factor: float) -> Drawing:
 def frozen(geometry: SheetGeometry, posed: Pose, factor: float = 1.0) -> Drawing:
     """Return a frame that tells the motion standing still: arrows of direction and size, still parts marked."""
     drawing = frame(geometry, posed, factor)
-    sign = 1.0 if factor >= 0 else -1.0
-    items = drawing.items + _arrows(geometry, posed, sign) + _still_marks(geometry, posed)
+    items = drawing.items + _arrows(geometry, posed, factor) + _still_marks(geometry, posed)
     return sheet_of(items, geometry.width, geometry.height, geometry.text_scale)
 
 
@@ -111,6 +111,7 @@ def still_drawing(geometry: SheetGeometry, title: TitleLines | None) -> Drawing:
     """Return what lies under the frames: paper, ground, labels of links, title block and the ghost at rest."""
     items = paper_items(geometry, title) + ground_items(geometry) + ghost_items(geometry)
     items += axis_items(geometry) + train_items(geometry) + excitation_items(geometry)
+    items += leader_items(geometry)
     return sheet_of((*items, *geometry.labels), geometry.width, geometry.height, geometry.text_scale)
 
 
@@ -146,8 +147,9 @@ def _twist(geometry: SheetGeometry, posed: Pose, factor: float) -> tuple[Item, .
     )
 
 
-def _arrows(geometry: SheetGeometry, posed: Pose, sign: float) -> tuple[Item, ...]:
+def _arrows(geometry: SheetGeometry, posed: Pose, factor: float) -> tuple[Item, ...]:
     """Draw one arrow beside each body along its motion, and one round it where it turns."""
+    sign = 1.0 if factor >= 0 else -1.0
     if geometry.train is not None:
         return _turn_arrows(geometry.train.dials, geometry.train.dial_radius + 4, posed.turns * sign)
     moving = posed.sizes > STILL
@@ -157,8 +159,8 @@ def _arrows(geometry: SheetGeometry, posed: Pose, sign: float) -> tuple[Item, ..
     beside = np.stack([boxes[:, 0] - 13.0 - np.abs(steps[:, 0]) / 2, boxes[:, [1, 3]].mean(axis=1)], axis=1)
     start = beside - steps / 2
     items: tuple[Item, ...] = (Lines(arrow(start[long], steps[long]), Role.ACCENT, 2.0),)
-    corner = np.stack([boxes[:, 2] + 4.0, boxes[:, 1] - 4.0], axis=1)
-    return items + _turn_arrows(corner[moving], 11.0, posed.turns[moving] * sign)
+    centres = geometry.points.rest[geometry.centres] + factor * posed.centre_steps
+    return items + _turn_arrows(centres[moving], 12.0, posed.turns[moving] * sign)
 
 
 def _turn_arrows(centres: Floats, radius: float, turns: Floats) -> tuple[Item, ...]:

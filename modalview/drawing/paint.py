@@ -104,7 +104,7 @@ class _Painting:
     def lines(self, item: Lines) -> None:
         if not len(item.segments):
             return
-        self.painter.setPen(self.pen(item.role, item.width))
+        self.painter.setPen(self.pen(item.role, item.width, item.opacity))
         self.painter.drawLines(_BUFFER.filled(item.segments))
 
     def polygons(self, item: Polygons) -> None:
@@ -131,8 +131,10 @@ class _Painting:
         # Centred on the capitals: a line with and one without descenders stand level.
         self.painter.drawText(QPointF(x, item.y + metrics.capHeight() / 2), item.text)
 
-    def pen(self, role: Role, width: float) -> QPen:
-        pen = QPen(QColor(self.palette[role]), width)
+    def pen(self, role: Role, width: float, opacity: float = 1.0) -> QPen:
+        colour = QColor(self.palette[role])
+        colour.setAlphaF(opacity)
+        pen = QPen(colour, width)
         pen.setCapStyle(Qt.PenCapStyle.RoundCap)
         pen.setJoinStyle(Qt.PenJoinStyle.RoundJoin)
         return pen

@@ -50,11 +50,14 @@ class Lines:
     role : Role
     width : float
         Pixels.
+    opacity : float
+        0..1.
     """
 
     segments: Floats
     role: Role = Role.INK
     width: float = 1.3
+    opacity: float = 1.0
 
 
 @dataclass(frozen=True, slots=True, eq=False)

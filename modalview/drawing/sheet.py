@@ -2,6 +2,7 @@
 
 import numpy as np
 
+from modalview.drawing.excitations import lines_above
 from modalview.drawing.furniture import TitleLines, sheet_of, title_lines, title_size
 from modalview.drawing.geometry import SheetGeometry, bare_geometry
 from modalview.drawing.layout import GROUND
@@ -11,6 +12,7 @@ from modalview.drawing.model_items import (
     excitation_items,
     ground_items,
     label_items,
+    leader_items,
     paper_items,
     part_items,
     train_items,
@@ -40,7 +42,7 @@ def sheet_geometry(
         None fits the model; else what ``geometry.view.panned`` or ``zoomed`` gave.
     """
     side = min(SIDE * text_scale, 0.2 * width)
-    top = title_size(model.title, width, text_scale)[1] + 46.0 * text_scale
+    top = title_size(model.title, width, text_scale)[1] + (57.0 + 17.0 * lines_above(model)) * text_scale
     area = (side, top, max(width - 2 * side, 40.0), max(height - top - BOTTOM, 40.0))
     return lettered(bare_geometry(model, (width, height), area, view, 1.0, text_scale))
 
@@ -51,7 +53,7 @@ def sheet_drawing(
     """Return the sheet at rest, with the selected part framed."""
     items = paper_items(geometry, title) + ground_items(geometry) + axis_items(geometry)
     items += train_items(geometry)
-    items += part_items(geometry, geometry.points.rest) + excitation_items(geometry)
+    items += leader_items(geometry) + part_items(geometry, geometry.points.rest) + excitation_items(geometry)
     items += (*geometry.labels, *label_items(geometry), *_frame(geometry, selected))
     return sheet_of(items, geometry.width, geometry.height, geometry.text_scale)
 

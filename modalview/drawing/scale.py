@@ -1,0 +1,306 @@
+"""The frequency scale: bands, counts, bounds and found modes on one logarithmic axis."""
+
+from dataclasses import dataclass
+
+import numpy as np
+
+from modalview.drawing.axis import Axis, spread
+from modalview.drawing.captions import shortened
+from modalview.drawing.labels import Board, Line, Spot
+from modalview.drawing.primitives import Anchor, Box, Circles, Drawing, Item, Lines, Role, Size, Text
+from modalview.drawing.scalecontent import ScaleBand, ScaleContent, ScaleCount, ScaleMode
+from modalview.drawing.symbols import arrow, hatched
+from modalview.drawing.textsize import text_width
+from modalview.resonance.results import Verdict
+from modalview.units.show import significant
+
+# A band this many times beyond the modes is off the scale, and marked at its edge.
+NEAR = 4.0
+# Bounds reach further than this from every band only on stiff models; the axis stays with the bands.
+FAR = 30.0
+PAD = 1.15  # of the axis beyond what it shows
+LEAST_SPAN = 3.0  # highest over lowest frequency of the axis
+
+# Columns as shares of the width between the two axes.
+_DISCS = (0.43, 0.56)
+_BOUND, _COUNT = 0.60, 0.69
+_MODE = (0.79, 0.91)
+_LABELS = 0.42
+
+_RANGE_ROLE = {Verdict.IN_BAND: Role.BAD, Verdict.NOMINAL_ONLY: Role.WARN}
+
+
+@dataclass(frozen=True, slots=True, eq=False)
+class Scale:
+    """A frequency scale and the axis it is drawn along."""
+
+    drawing: Drawing
+    axis: Axis
+
+
+@dataclass(frozen=True, slots=True)
+class _Frame:
+    """Where things stand: the axis, the two sides, and the place for labels."""
+
+    axis: Axis
+    left: float
+    right: float
+    text_scale: float
+    board: Board
+
+    def x(self, share: float) -> float:
+        return self.left + share * (self.right - self.left)
+
+
+def scale_drawing(
+    content: ScaleContent, width: float, height: float, *, text_scale: float = 1.0, discs: bool = True
+) -> Scale:
+    """Draw the frequency scale.
+
+    Parameters
+    ----------
+    content : ScaleContent
+    width, height : float
+        Pixels.
+    text_scale : float
+    discs : bool
+        Whether the Gershgorin bars are shown or folded.
+    """
+    low, high = axis_range(content)
+    axis = Axis(low, high, 30.0 * text_scale, max(height - 58.0 * text_scale, 60.0 * text_scale))
+    frame = _Frame(
+        axis,
+        12.0 + text_width("4 000", Size.SMALL, text_scale=text_scale),
+        width - 14.0 - text_width("240 000", Size.SMALL, text_scale=text_scale),
+        text_scale,
+        Board(width, height, text_scale),
+    )
+    items = _axes(frame) + _bands(frame, content.bands)
+    if discs:
+        items += _discs(frame, content)
+    items += _bounds(frame, content) + _counts(frame, content.counts) + _modes(frame, content.modes)
+    items += _titles(frame, content, discs=discs)
+    return Scale(Drawing(items, (0.0, 0.0, width, height), text_scale), axis)
+
+
+def axis_range(content: ScaleContent) -> tuple[float, float]:
+    """Return the lowest and the highest frequency of the axis in Hz, fitted to the model."""
+    known = [hz for pair in (content.lowest, content.highest) if pair is not None for hz in pair]
+    known += [hz for mode in content.modes for hz in (mode.low, mode.high)]
+    known = [hz for hz in known if 0 < hz < np.inf]
+    bands = [hz for band in content.bands for hz in (band.low, band.high)]
+    low, high = min(known or bands or [1.0]), max(known or bands or [100.0])
+    if bands:
+        low, high = max(low, min(bands) / FAR), min(high, max(bands) * FAR)
+        near = [hz for band in content.bands if _is_near(band, low, high) for hz in (band.low, band.high)]
+        low, high = min([low, *near]), max([high, *near])
+    low, high = low / PAD, high * PAD
+    wider = max(1.0, np.sqrt(LEAST_SPAN * low / high))
+    return float(low / wider), float(high * wider)
+
+
+def _is_near(band: ScaleBand, low: float, high: float) -> bool:
+    return band.high >= low / NEAR and band.low <= high * NEAR
+
+
+def _axes(frame: _Frame) -> tuple[Item, ...]:
+    """Draw the ticks, hertz at the left and revolutions per minute at the right."""
+    apart = 19.0 * frame.text_scale
+    ticks = frame.axis.ticks(apart)
+    rows = [(frame.axis.y_of(hz), hz) for hz in ticks]
+    lines = np.array([[frame.left, y, frame.right, y] for y, _ in rows]).reshape(-1, 4)
+    items: list[Item] = [Lines(lines, Role.GRID, 1.0)]
+    for y, hz in rows:
+        items.append(Text(frame.left - 6, y, grouped(hz), Role.MUTED, Size.SMALL, Anchor.RIGHT))
+        items.append(Text(frame.right + 6, y, grouped(60 * hz), Role.MUTED, Size.SMALL))
+    y = 10.0 * frame.text_scale
+    items.append(Text(frame.left - 6, y, "Hz", Role.INK, Size.SMALL, Anchor.RIGHT, bold=True))
+    items.append(Text(frame.right + 6, y, "rpm", Role.INK, Size.SMALL, bold=True))
+    return tuple(items)
+
+
+def grouped(number: float) -> str:
+    """Write a round number with its thousands apart.
+
+    >>> grouped(24000.0), grouped(0.5)
+    ('24 000', '0.5')
+    """
+    if number < 1000:
+        return f"{number:.4g}"
+    return f"{number:,.0f}".replace(",", " ")
+
+
+def _bands(frame: _Frame, bands: tuple[ScaleBand, ...]) -> tuple[Item, ...]:
+    axis = frame.axis
+    shown = [band for band in bands if band.high > axis.low_hz and band.low < axis.high_hz]
+    items: list[Item] = []
+    for band in shown:
+        top, bottom = axis.y_of(band.high), axis.y_of(band.low)
+        box = (frame.left, top, frame.right - frame.left, bottom - top)
+        items.append(Box(*box, 0.0, None, Role.WARN, 0.0, 0.05))
+        items.append(Lines(hatched(*box), Role.WARN, 0.8, 0.28))
+        items.append(Box(*box, 0.0, Role.WARN, None, 0.7))
+        edges = sorted({band.from_, band.to})
+        lines = [
+            [frame.left, axis.y_of(hz), frame.right, axis.y_of(hz)]
+            for hz in edges
+            if axis.low_hz <= hz <= axis.high_hz
+        ]
+        items.append(Lines(np.array(lines).reshape(-1, 4), Role.WARN, 1.8))
+    for band in sorted(shown, key=lambda band: band.to):
+        items += _band_label(frame, band)
+    return tuple(items) + _off_scale(frame, [band for band in bands if band not in shown])
+
+
+def _band_label(frame: _Frame, band: ScaleBand) -> list[Text]:
+    room = _LABELS * (frame.right - frame.left) - 8
+    label = shortened(band.label, room / 1.12, Size.SMALL, frame.text_scale)
+    middle = frame.axis.y_of(band.to) - 8.0 * frame.text_scale
+    return _labelled(frame, (Line(label, Role.WARN, Size.SMALL, bold=True),), middle)
+
+
+def _labelled(frame: _Frame, lines: tuple[Line, ...], y: float) -> list[Text]:
+    """Write into the label column, as near to a height as there is room."""
+    high = frame.board.size(lines)[1] / 2
+    low, top = frame.axis.bottom - high, frame.axis.top + high
+    steps = sorted((step for step in range(-240, 241, 3)), key=abs)
+    spots = [Spot(frame.left + 6, min(max(y + step, top), low), 1, 0) for step in steps]
+    return frame.board.place(lines, spots)
+
+
+def _off_scale(frame: _Frame, bands: list[ScaleBand]) -> tuple[Item, ...]:
+    """Mark bands beyond the axis at its edge, with an arrow towards them."""
+    items: list[Item] = []
+    for band in bands:
+        above = band.low >= frame.axis.high_hz
+        y = frame.axis.top + 9 * frame.text_scale if above else frame.axis.bottom - 9 * frame.text_scale
+        span = sorted({grouped(float(f"{hz:.3g}")) for hz in (band.from_, band.to)}, key=len)
+        line = Line(f"{band.label} {' to '.join(span)} Hz", Role.WARN, Size.SMALL, bold=True)
+        room = (_COUNT - 0.02) * (frame.right - frame.left) - 22
+        line = Line(shortened(line.text, room / 1.12, Size.SMALL, frame.text_scale), Role.WARN, Size.SMALL, bold=True)
+        steps = range(0, 200, 4) if above else range(0, -200, -4)
+        placed = frame.board.place((line,), [Spot(frame.left + 22, y + step, 1, 0) for step in steps])
+        if placed:
+            start, up = placed[0].y + (5.0 if above else -5.0), -11.0 if above else 11.0
+            shaft = arrow(np.array([[frame.left + 11, start]]), np.array([[0.0, up]]), 5.0)
+            items += [Lines(shaft, Role.WARN, 1.6), *placed]
+    return tuple(items)
+
+
+def _discs(frame: _Frame, content: ScaleContent) -> tuple[Item, ...]:
+    """Draw the Gershgorin bars, thin and pale, side by side."""
+    if not len(content.discs):
+        return ()
+    ordered = content.discs[np.argsort(content.discs[:, 1])]
+    first, last = frame.x(_DISCS[0]), frame.x(_DISCS[1])
+    pitch = min(8.0, (last - first) / max(len(ordered) - 1, 1))
+    x = (first + last) / 2 + (np.arange(len(ordered)) - (len(ordered) - 1) / 2) * pitch
+    bottom = [frame.axis.y_of(hz) for hz in ordered[:, 0]]
+    top = [frame.axis.y_of(hz) for hz in ordered[:, 2]]
+    bars = np.stack([x, np.array(bottom), x, np.array(top)], axis=1)
+    dots = np.stack([x, np.array([frame.axis.y_of(hz) for hz in ordered[:, 1]])], axis=1)
+    width = min(3.0, 0.7 * pitch) if len(ordered) > 1 else 3.0
+    return (
+        Lines(bars, Role.MUTED, width, 0.55),
+        Circles(dots, min(2.4, width), None, Role.MUTED, 0.0),
+    )
+
+
+def _bounds(frame: _Frame, content: ScaleContent) -> tuple[Item, ...]:
+    """Draw the bounds of the lowest and of the highest mode as thick short bars, with their numbers."""
+    items: list[Item] = []
+    x = frame.x(_BOUND)
+    for name, pair, below in (("lowest mode", content.lowest, True), ("highest mode", content.highest, False)):
+        if pair is None:
+            continue
+        low, high = (frame.axis.y_of(hz) for hz in pair)
+        middle = (low + high) / 2
+        if low - high < 3.0:
+            low, high = middle + 1.5, middle - 1.5
+        items.append(Lines(np.array([[x, low, x, high]]), Role.INK, 4.0))
+        text = f"{significant(pair[0], 3)} to {significant(pair[1], 3)}"
+        lines = (Line(name, Role.INK, Size.SMALL), Line(text, Role.INK, Size.SMALL))
+        items += _labelled(frame, lines, low + 20 * frame.text_scale if below else high - 20 * frame.text_scale)
+    return tuple(items)
+
+
+def _counts(frame: _Frame, counts: tuple[ScaleCount, ...]) -> tuple[Item, ...]:
+    """Draw a bracket over every interval with the number of modes in a circle."""
+    axis = frame.axis
+    shown = [count for count in counts if count.high > axis.low_hz and count.low < axis.high_hz]
+    radius = 9.0 * frame.text_scale
+    middles = [(axis.y_of(count.low) + axis.y_of(count.high)) / 2 for count in shown]
+    order = sorted(range(len(shown)), key=middles.__getitem__)
+    wanted = [middles[number] for number in order]
+    placed = spread(wanted, 2 * radius + 2, axis.top + radius, axis.bottom - radius)
+    items: list[Item] = []
+    reached = 0.0
+    for number, count in enumerate(shown):
+        overlapping = count.low < reached * (1 - 1e-9)
+        reached = max(reached, count.high)
+        x = frame.x(_COUNT) + (6.0 if overlapping else 0.0)
+        items.append(_bracket(x, axis.y_of(count.low) - 1.5, axis.y_of(count.high) + 1.5, _role(count)))
+        items += _circle(count, frame.x(_COUNT), placed[order.index(number)], radius)
+    items.sort(key=lambda item: not isinstance(item, Lines))  # the circles lie on the brackets
+    return tuple(items)
+
+
+def _role(count: ScaleCount) -> Role:
+    if not count.in_band:
+        return Role.INK
+    if count.number is None:
+        return Role.WARN
+    return Role.BAD if count.number > 0 else Role.INK
+
+
+def _bracket(x: float, low: float, high: float, role: Role) -> Lines:
+    foot = 6.0
+    return Lines(np.array([[x, low, x, high], [x, low, x + foot, low], [x, high, x + foot, high]]), role, 1.5)
+
+
+def _circle(count: ScaleCount, x: float, y: float, radius: float) -> list[Item]:
+    role = _role(count)
+    text = "?" if count.number is None else str(count.number)
+    marked = role is not Role.INK
+    size = Size.SMALL if len(text) < 3 or not marked else Size.SMALL
+    return [
+        Circles(np.array([[x, y]]), radius, role, Role.PAPER, 2.4 if marked else 1.2),
+        Text(x, y, text, role, size, Anchor.MIDDLE, bold=marked),
+    ]
+
+
+def _modes(frame: _Frame, modes: tuple[ScaleMode, ...]) -> tuple[Item, ...]:
+    """Draw found modes as ticks with their tolerance range and number."""
+    axis = frame.axis
+    shown = sorted((m for m in modes if axis.low_hz <= m.hz <= axis.high_hz), key=lambda mode: -mode.hz)
+    left, right = frame.x(_MODE[0]), frame.x(_MODE[1])
+    items: list[Item] = []
+    wanted = [axis.y_of(mode.hz) for mode in shown]
+    placed = spread(wanted, 13.0 * frame.text_scale, axis.top, axis.bottom)
+    for mode, y, text_y in zip(shown, wanted, placed, strict=True):
+        role = Role.ACCENT if mode.verdict is None else _RANGE_ROLE.get(mode.verdict, Role.ACCENT)
+        top, bottom = axis.y_of(mode.high), axis.y_of(mode.low)
+        items.append(Box(left, top, right - left, max(bottom - top, 1.0), 2.0, None, role, 0.0, 0.2))
+        items.append(Lines(np.array([[left, y, right, y]]), role, 2.4))
+        items.append(Text(right + 5, text_y, str(mode.number), role, Size.SMALL, Anchor.LEFT, bold=True))
+    return tuple(items)
+
+
+def _titles(frame: _Frame, content: ScaleContent, *, discs: bool) -> tuple[Item, ...]:
+    """Write what the columns show, under them; rigid-body modes are at zero, below every axis."""
+    size, text_scale = Size.SMALL, frame.text_scale
+    columns = [(_COUNT, ("modes", "inside"))]
+    if discs and len(content.discs):
+        columns.append(((_DISCS[0] + _DISCS[1]) / 2 - 0.13, ("Gershgorin", "bounds")))
+    if content.modes:
+        columns.append((sum(_MODE) / 2 + 0.06, ("found", "modes")))
+    items: list[Item] = []
+    for share, lines in columns:
+        for row, line in enumerate(lines):
+            y = frame.axis.bottom + (14.0 + 13.0 * row) * text_scale
+            items.append(Text(frame.x(share), y, line, Role.MUTED, size, Anchor.MIDDLE))
+    if content.rigid_body_modes:
+        number = content.rigid_body_modes
+        text = f"and {number} rigid-body mode{'s' if number > 1 else ''} at 0 Hz"
+        items.append(Text(frame.left, frame.axis.bottom + 44.0 * text_scale, text, Role.MUTED, size))
+    return tuple(items)

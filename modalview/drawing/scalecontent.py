@@ -1,0 +1,137 @@
+"""What the frequency scale shows, taken from the study's results; all Hz."""
+
+from dataclasses import dataclass, field
+
+import numpy as np
+
+from modalview.bounds.discs import Discs
+from modalview.drawing.primitives import Floats
+from modalview.resonance.results import Verdict
+from modalview.study.results import Outlook, Solution
+
+
+@dataclass(frozen=True, slots=True)
+class ScaleBand:
+    """An avoidance band.
+
+    Parameters
+    ----------
+    label : str
+        "1×", "7× vane pass".
+    low, high : float
+        Ends of the band.
+    from_, to : float
+        Lowest and highest excitation frequency; equal at a fixed speed.
+    verdict : Verdict
+    """
+
+    label: str
+    low: float
+    high: float
+    from_: float
+    to: float
+    verdict: Verdict
+
+
+@dataclass(frozen=True, slots=True)
+class ScaleCount:
+    """Number of modes between two frequencies; ``number`` None is undecided."""
+
+    low: float
+    high: float
+    number: int | None
+    in_band: bool
+
+
+@dataclass(frozen=True, slots=True)
+class ScaleMode:
+    """A found mode with its tolerance range."""
+
+    number: int
+    hz: float
+    low: float
+    high: float
+    verdict: Verdict | None = None
+
+
+def _none() -> Floats:
+    return np.zeros((0, 3))
+
+
+@dataclass(frozen=True, slots=True, eq=False)
+class ScaleContent:
+    """Everything the frequency scale shows.
+
+    Parameters
+    ----------
+    bands : tuple of ScaleBand
+    counts : tuple of ScaleCount
+        Ascending.
+    lowest, highest : pair of float or None
+        Bounds of the lowest elastic and of the highest mode.
+    discs : array (n, 3)
+        Low, centre, high of the Gershgorin discs of S.
+    modes : tuple of ScaleMode
+        Elastic ones.
+    rigid_body_modes : int
+        Modes at 0, told below the axis.
+    """
+
+    bands: tuple[ScaleBand, ...] = ()
+    counts: tuple[ScaleCount, ...] = ()
+    lowest: tuple[float, float] | None = None
+    highest: tuple[float, float] | None = None
+    discs: Floats = field(default_factory=_none)
+    modes: tuple[ScaleMode, ...] = ()
+    rigid_body_modes: int = 0
+
+
+def scale_content(outlook: Outlook, solution: Solution | None = None) -> ScaleContent:
+    """Take from an outlook, and the solution of the same model if there is one, what the scale shows."""
+    bands = tuple(
+        ScaleBand(
+            check.band.label,
+            *(omega / (2 * np.pi) for omega in (*check.band.nominal, *check.band.excitation)),
+            check.verdict,
+        )
+        for check in outlook.checks
+    )
+    counts = tuple(
+        ScaleCount(interval.low_hz, interval.high_hz, interval.number, interval.check is not None)
+        for interval in outlook.intervals
+    )
+    bounds = outlook.bounds
+    return ScaleContent(
+        bands=bands,
+        counts=counts,
+        lowest=bounds.lowest_hz,
+        highest=bounds.highest_hz,
+        discs=_discs_hz(bounds.symmetric),
+        modes=_modes(bands, solution),
+        rigid_body_modes=bounds.rigid_body_modes,
+    )
+
+
+def _discs_hz(discs: Discs | None) -> Floats:
+    """Return low, centre and high (n, 3) of discs in rad**2/s**2 as Hz; below zero counts as 0."""
+    if discs is None:
+        return _none()
+    ends = np.stack([discs.centres - discs.radii, discs.centres, discs.centres + discs.radii], axis=1)
+    hz: Floats = np.sqrt(np.maximum(ends, 0.0)) / (2 * np.pi)
+    return hz
+
+
+def _modes(bands: tuple[ScaleBand, ...], solution: Solution | None) -> tuple[ScaleMode, ...]:
+    """Return the elastic modes, each with the worst that a band makes of it."""
+    modes = []
+    for mode in solution.modes if solution is not None else ():
+        if mode.kind != "elastic":
+            continue
+        low, high = mode.range_hz
+        verdict = Verdict.CLEAR if bands else None
+        if any(band.low <= high and low <= band.high for band in bands):
+            verdict = Verdict.NOMINAL_ONLY
+        if any(band.low <= mode.frequency_hz <= band.high for band in bands):
+            verdict = Verdict.IN_BAND
+        modes.append(ScaleMode(mode.number, mode.frequency_hz, low, high, verdict))
+    return tuple(modes)
