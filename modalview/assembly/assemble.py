@@ -11,20 +11,16 @@ import scipy.sparse as sp
 
 from modalview.assembly.coordinates import Coordinates, independent_coordinates
 from modalview.assembly.kinematics import places
-from modalview.assembly.masses import (
-    mass_parameters,
-    principal_terms,
-)
-from modalview.assembly.parameters import Case, Parameter, parameter, values_at
+from modalview.assembly.masses import principal_terms
+from modalview.assembly.parameters import Case, Parameter, values_at
 from modalview.assembly.pencil import Coordinate, Pencil
+from modalview.assembly.perpart import PerPart, per_part
 from modalview.assembly.quadratic import QuadraticForm
 from modalview.assembly.rigid import rigid_body_motions
 from modalview.assembly.scales import coordinate_scales
-from modalview.assembly.skeleton import skeleton
 from modalview.assembly.soundness import require_links
 from modalview.assembly.stretch import Stretch, stretches
 from modalview.model.parts import FREEDOMS, Body, InertiaTensor, Link, Model, Motion
-from modalview.model.values import Value
 
 Array = npt.NDArray[np.float64]
 
@@ -75,6 +71,7 @@ class Structure:
 
     skeleton: tuple[Any, ...]
     coordinates: Coordinates
+    labels: tuple[Coordinate, ...]
     stiffness: TermSet
     mass: TermSet
     damping: TermSet
@@ -91,11 +88,14 @@ class Assembly:
     structure : Structure
     parameters : tuple of Parameter
         Every typed value that the terms use.
+    by_part : PerPart
+        What each part contributes, kept for the next edit.
     """
 
     model: Model
     structure: Structure
     parameters: tuple[Parameter, ...]
+    by_part: PerPart
 
     @property
     def n(self) -> int:
@@ -134,19 +134,20 @@ class Assembly:
         at, structure = values_at(self.parameters, case), self.structure
         stiffness = structure.stiffness.values(at)
         mass = structure.mass.form.matrix(structure.mass.values(at))
-        nominal = mass if case is Case.NOMINAL else self.pencil().M
+        free = structure.coordinates.free
+        nominal = case is Case.NOMINAL
+        # Coordinates are compared on one scale in all cases.
+        scale = coordinate_scales(self.model.motion, free, mass) if nominal else self.pencil().scale
         return Pencil(
             K=structure.stiffness.form.matrix(stiffness),
             M=mass,
             massless=structure.coordinates.massless,
-            scale=coordinate_scales(self.model.motion, structure.coordinates.free, nominal),
+            scale=scale,
             rigid_body=structure.rigid_body,
             rows=structure.stiffness.rows,
             stiffness=stiffness,
             C=structure.damping.form.matrix(structure.damping.values(at)),
-            coordinates=tuple(
-                Coordinate(part, freedom, i) for i, (part, freedom) in enumerate(structure.coordinates.free)
-            ),
+            coordinates=structure.labels,
         )
 
     def body_motion(self, shapes: Array) -> Array:
@@ -174,12 +175,13 @@ def assemble(model: Model, previous: Assembly | None = None) -> Assembly:
     ModelFaultsError
         A body is joined to nothing, a gear loop cannot turn, no motion is left.
     """
-    parameters = _parameters(model)
-    bones = skeleton(model)
+    by_part = per_part(model, previous.by_part if previous else None)
+    parameters = tuple(p for part in by_part.parameters for p in part)
+    bones = (model.motion, by_part.bones)
     if previous is not None and previous.structure.skeleton == bones:
-        return Assembly(model, previous.structure, parameters)
+        return Assembly(model, previous.structure, parameters, by_part)
     require_links(model)
-    return Assembly(model, _structure(model, bones, parameters), parameters)
+    return Assembly(model, _structure(model, bones, parameters), parameters, by_part)
 
 
 def _structure(model: Model, bones: tuple[Any, ...], parameters: Sequence[Parameter]) -> Structure:
@@ -194,6 +196,7 @@ def _structure(model: Model, bones: tuple[Any, ...], parameters: Sequence[Parame
     return Structure(
         skeleton=bones,
         coordinates=coordinates,
+        labels=tuple(Coordinate(part, freedom, i) for i, (part, freedom) in enumerate(coordinates.free)),
         stiffness=sets["stiffness"],
         mass=_mass_terms(model, coordinates, index),
         damping=sets["damping"],
@@ -274,37 +277,4 @@ def _body_mass_terms(body: Body, motion: Motion) -> list[tuple[str, float, dict[
             found.append(("inertia", moment, form))
     else:
         found.append(("inertia", 1.0, {(body.id, "rz"): 1.0}))
-    return found
-
-
-def _parameters(model: Model) -> tuple[Parameter, ...]:
-    default = model.default_tolerance
-    found = [p for body in model.bodies for p in mass_parameters(body, default, model.motion)]
-    soft = default.stiffness if default else None
-    for link in model.links:
-        fallback = (link.tolerance, soft)
-        for key, value, family in link_values(link):
-            ratio = key == "dynamic_ratio"
-            found.append(parameter(link, key, value, family, () if ratio else fallback))
-    return tuple(found)
-
-
-_SINGLE_VALUES = ("stiffness", "damping", "E", "A", "I", "Iy", "Iz", "G", "J", "dynamic_ratio")
-_MOUNT_DIRECTIONS = ("x", "y", "z", "rx", "ry", "rz")
-
-
-def link_values(link: Link) -> list[tuple[str, Value, str]]:
-    """Return the typed values of a link that enter its terms: (key, value, family)."""
-    found = []
-    for name in _SINGLE_VALUES:
-        value = getattr(link, name, None)
-        family = "damping" if name == "damping" else "stiffness"
-        if isinstance(value, Value):
-            found.append((name, value, family))
-        elif value is not None:
-            found += [
-                (f"{name}.{direction}", part, family)
-                for direction in _MOUNT_DIRECTIONS
-                if (part := getattr(value, direction)) is not None
-            ]
     return found

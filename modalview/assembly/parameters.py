@@ -86,4 +86,6 @@ def inertia_scale(body: Body, tensor: InertiaTensor, default: DefaultTolerance |
 
 def values_at(parameters: tuple[Parameter, ...], case: Case) -> npt.NDArray[np.float64]:
     """Return every parameter's value in a case, SI."""
+    if case is Case.NOMINAL:
+        return np.array([p.nominal for p in parameters], dtype=float)
     return np.array([p.at(case) for p in parameters], dtype=float)

@@ -1,4 +1,8 @@
-"""What of a model decides its coordinates and rows: everything but the sizes of its values."""
+"""What of a model decides its coordinates and rows: everything but the sizes of its values.
+
+Sizes of stiffnesses and of masses do not matter, except that bodies joined rigidly move with their joint
+centre of gravity, and that an inertia tensor's principal axes are rows.
+"""
 
 from typing import Any
 
@@ -12,35 +16,32 @@ from modalview.model.parts import (
     InertiaTensor,
     Link,
     Model,
+    Motion,
     Mount,
     RigidLink,
     Shaft,
+    Support,
 )
 
 
-def skeleton(model: Model) -> tuple[Any, ...]:
-    """Return a key that is equal for two models exactly when one structure serves both.
-
-    Sizes of stiffnesses and of masses do not matter, except that bodies joined rigidly move with their
-    joint centre of gravity and that skew inertia tensors turn their principal axes.
-    """
-    joined = {
-        end.body for link in model.links if isinstance(link, RigidLink) for end in (link.from_, link.to)
-    }
-    names = FREEDOMS[model.motion]
-    return (
-        model.motion,
-        tuple(_body(body, names, weigh=body.id in joined) for body in model.bodies),
-        tuple((s.id, _numbers(s.position)) for s in model.supports),
-        tuple(_link(link) for link in model.links),
+def joined_bodies(model: Model) -> frozenset[str]:
+    """Return the bodies that rigid links join to others: they move about a joint centre of gravity."""
+    return frozenset(
+        str(end.body) for link in model.links if isinstance(link, RigidLink) for end in (link.from_, link.to)
     )
+
+
+def support_bones(support: Support) -> tuple[Any, ...]:
+    """Return what of a support decides rows."""
+    return (support.id, _numbers(support.position))
 
 
 def _numbers(point: Any) -> tuple[float, ...] | None:
     return None if point is None else tuple(entry.si for entry in point)
 
 
-def _body(body: Body, names: tuple[str, ...], *, weigh: bool) -> tuple[Any, ...]:
+def body_bones(body: Body, motion: Motion, *, weigh: bool) -> tuple[Any, ...]:
+    """Return what of a body decides coordinates and rows; its mass where ``weigh`` says so."""
     inertia = body.inertia
     tensor = inertia if isinstance(inertia, InertiaTensor) else None
     return (
@@ -48,7 +49,7 @@ def _body(body: Body, names: tuple[str, ...], *, weigh: bool) -> tuple[Any, ...]
         body.name,
         _numbers(body.position),
         body.dof,
-        tuple(has_inertia(body, name) for name in names),
+        tuple(has_inertia(body, name) for name in FREEDOMS[motion]),
         body.mass.si if weigh and body.mass else None,
         # Principal moments enter the rows' factors, so any tensor is part of the structure.
         tensor,
@@ -59,7 +60,8 @@ def _end(end: End) -> tuple[Any, ...]:
     return (end.body, end.support, _numbers(end.offset))
 
 
-def _link(link: Link) -> tuple[Any, ...]:
+def link_bones(link: Link) -> tuple[Any, ...]:
+    """Return what of a link decides coordinates and rows."""
     own: tuple[Any, ...] = (getattr(link, "direction", None), link.dynamic_ratio is None)
     if isinstance(link, Mount):
         groups = (link.stiffness, link.damping)
