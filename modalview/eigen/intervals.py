@@ -134,6 +134,8 @@ def _tightened(found: Rayleigh, run: _Run, below: float, above: float) -> tuple[
     """Intersect the linear interval with the quadratic one, given the nearest other eigenvalues."""
     theta = found.quotient[run.start : run.stop]
     lower, upper = theta - run.radius, theta + run.radius
+    if not np.isfinite(run.radius):
+        return lower, upper
     square = run.radius**2
     # Beside a run the rest of the spectrum is known only to within the run's own radius.
     blur = run.defect + (run.radius if run.size > 1 else 0.0)

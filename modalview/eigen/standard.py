@@ -52,11 +52,15 @@ def eigenpairs(standard: Array) -> tuple[Array, Array]:
     Raises
     ------
     NumericalError
-        The iteration did not converge (entries that are not finite).
+        Entries are not finite, or the iteration did not converge.
     """
     size = len(standard)
     if size == 0:
         return np.zeros(0), np.zeros((0, 0))
+    if not np.isfinite(standard).all():
+        raise NumericalError(
+            "A stiffness divided by a mass is beyond the range of numbers; check their units."
+        )
     if size >= SMALL:
         try:
             values, vectors = np.linalg.eigh(standard)

@@ -38,7 +38,10 @@ def _correction(inner: mpmath.matrix, across: mpmath.matrix) -> mpmath.matrix:
 
 
 def _solved(matrix: mpmath.matrix, right: mpmath.matrix) -> mpmath.matrix:
-    columns = [mpmath.lu_solve(matrix, right[:, j]) for j in range(right.cols)]
+    factors, order = mpmath.mp.LU_decomp(matrix)
+    columns = [
+        mpmath.mp.U_solve(factors, mpmath.mp.L_solve(factors, right[:, j], order)) for j in range(right.cols)
+    ]
     return mpmath.matrix([[column[i] for column in columns] for i in range(matrix.rows)])
 
 

@@ -156,7 +156,15 @@ def test_all_eigenvalues_agree() -> None:
 
 def test_result_cannot_be_changed() -> None:
     modes = find_modes(ring(5))
-    for name in ("eigenvalues", "shapes", "frequency_hz", "numerical_error_hz", "lower", "upper", "residuals"):
+    for name in (
+        "eigenvalues",
+        "shapes",
+        "frequency_hz",
+        "numerical_error_hz",
+        "lower",
+        "upper",
+        "residuals",
+    ):
         assert not getattr(modes, name).flags.writeable
 
 
