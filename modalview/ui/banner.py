@@ -69,7 +69,7 @@ class Banner(QFrame):
         self.sign.show_verdict(verdict, self._theme)
         self.word.setText(word)
         self.word.setVisible(bool(word))
-        self.sign.setVisible(bool(word))
+        self.sign.setVisible(bool(sentence))
         self.word.setProperty("verdict", verdict or "none")
         self.word.style().polish(self.word)
         self.sentence.setText(sentence)
@@ -100,5 +100,5 @@ def _said(analysis: Analysis) -> tuple[str | None, str, str]:
         sentence = f"{sentence} The modes were not found: {analysis.refusal}"
     verdict = analysis.outlook.verdict
     if verdict is None:
-        return None, "Nothing to check", sentence
+        return None, "", sentence
     return str(verdict), _WORDS[str(verdict)], sentence

@@ -183,6 +183,7 @@ class PartTable(QTableView):
         if anew:
             self.fit_columns()
             self.setCurrentIndex(self.lines.index(0, TYPED))
+            self.horizontalScrollBar().setValue(0)
 
     def fit_columns(self) -> None:
         """Make columns and lines as large as the text needs."""

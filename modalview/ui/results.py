@@ -68,6 +68,7 @@ class Results(QScrollArea):
         self.setWidgetResizable(True)
         self.setHorizontalScrollBarPolicy(Qt.ScrollBarPolicy.ScrollBarAlwaysOff)
         self.setFrameShape(QFrame.Shape.NoFrame)
+        self.setMinimumWidth(250)
         self._inside = QWidget(self)
         self._inside.setObjectName("resultsInside")
         self._column = QVBoxLayout(self._inside)

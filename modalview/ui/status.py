@@ -3,7 +3,7 @@
 import time
 
 from PySide6.QtCore import QTimer
-from PySide6.QtWidgets import QLabel, QStatusBar
+from PySide6.QtWidgets import QLabel, QSizePolicy, QStatusBar
 
 from modalview.ui.analysis import Analysis
 from modalview.ui.document import Document
@@ -33,6 +33,8 @@ class StatusLine:
     def __init__(self, bar: QStatusBar) -> None:
         self.state = QLabel(bar)
         caution = QLabel(CAUTION, bar)
+        # Where there is no room for both, the caution is what stays whole.
+        self.state.setSizePolicy(QSizePolicy.Policy.Ignored, QSizePolicy.Policy.Preferred)
         bar.addWidget(self.state, 1)
         bar.addPermanentWidget(caution)
         bar.setSizeGripEnabled(False)

@@ -68,7 +68,7 @@ class Window(QMainWindow):
 
     def _build(self) -> None:
         self.resize(*_SIZE)
-        self.setMinimumSize(760, 520)
+        self.setMinimumSize(840, 540)
         self.setAcceptDrops(True)
         self.banner = Banner(self)
         self.sheet = Sheet(self)

@@ -13,6 +13,7 @@ from PySide6.QtCore import QObject, QThread, Signal, Slot
 
 from modalview.errors import CancelledError, KeepclearError
 from modalview.model.parts import Model
+from modalview.ui.apart import LARGE_MODEL, solve_apart
 
 # Models of at most so many coordinates find their modes after each edit, unless switched off: below, all
 # modes take a few hundredths of a second.
@@ -64,7 +65,7 @@ class Study:
 
     request: Callable[..., Any]
     look: Callable[[Any, Any], Any]
-    solve: Callable[[Any], Any]
+    solve: Callable[[Any, Any], Any]
 
 
 def load_study() -> Study:
@@ -120,7 +121,11 @@ class _Desk(QObject):
         small = outlook.assembly.pencil().n <= SMALL_MODEL
         if order.find is Find.ALWAYS or (order.find is Find.IF_SMALL and small):
             self._answer(order, Step.FINDING)
-            self._answer(order, Step.SOLVED, study.solve(request))
+            if outlook.assembly.pencil().n > LARGE_MODEL:
+                found = solve_apart(outlook, order.stop.is_set, request.progress)
+            else:
+                found = study.solve(request, outlook)
+            self._answer(order, Step.SOLVED, found)
 
 
 class Worker(QObject):
