@@ -31,12 +31,12 @@ def bounds_document(path: Path, outlook: Outlook) -> dict[str, Any]:
                 ("symmetric", bounds.symmetric),
             )
         },
-        "norms_hz": {
-            "one": _finite(bounds.norms.one_hz),
-            "infinity": _finite(bounds.norms.infinity_hz),
-            "frobenius": _finite(bounds.norms.frobenius_hz),
+        "norms_rad2_per_s2": {
+            "one": bounds.norms.one,
+            "infinity": bounds.norms.infinity,
+            "frobenius": bounds.norms.frobenius,
         },
-        "notes": list(outlook.notes),
+        "notes": [*outlook.notes, *bounds.notes],
     }
 
 
@@ -166,6 +166,3 @@ def _pair(span: tuple[float, float] | None) -> list[float] | None:
 def _percent(share: float | None) -> float | None:
     return None if share is None else 100 * share
 
-
-def _finite(value: float | None) -> float | None:
-    return value if value is not None and math.isfinite(value) else None

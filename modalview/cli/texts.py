@@ -34,7 +34,7 @@ def bounds_text(outlook: Outlook) -> str:
             for c in outlook.checks
         ]
         parts.append(table([head, *rows], right=frozenset({2, 3, 4})))
-    parts.append(outlook.sentence)
+    parts += [outlook.sentence, "\n".join(bounds.notes)]
     return "\n\n".join(parts + _tail(outlook))
 
 

@@ -4,7 +4,7 @@ import math
 from collections.abc import Sequence
 
 from modalview.model.parts import Machine, Model, SpeedRange
-from modalview.resonance.results import Check, Verdict
+from modalview.resonance.results import Check, Drive, Verdict
 from modalview.resonance.wording import hz_range, margin_text, percent
 from modalview.study.results import FoundMode
 from modalview.units.show import significant
@@ -37,7 +37,10 @@ def excitation_text(model: Model, check: Check) -> str:
     band = check.band
     machine = next(m for m in model.machines if m.id == band.machine)
     if band.order is None:
-        return f"{band.label}"
+        return band.label
+    excitation = next(e for e in machine.excitations if e.id == band.excitation_id)
+    if excitation.of is not None and excitation.of != machine.on:
+        return f"{band.label} ({hz_range(*band.excitation)} at {speed_text(machine)})"
     return f"{band.label} of {speed_text(machine)} ({hz_range(*band.excitation)})"
 
 
@@ -66,7 +69,14 @@ def _in_full(model: Model, check: Check, modes: Sequence[FoundMode]) -> str:
         place = f"is {abs(100 * check.separation):.1f} % {side}"
     if check.verdict is Verdict.NOMINAL_ONLY:
         return f"{head}: {found} {place}, but over tolerance {_reach(check)}; {wanted}."
-    return f"{head}: {found} {place}; {wanted}."
+    return f"{head}: {found} {place}{_faint(check)}; {wanted}."
+
+
+def _faint(check: Check) -> str:
+    """Say when the force hardly drives any mode concerned; it does not change the verdict."""
+    if check.drives and all(drive.drive is Drive.HARDLY for drive in check.drives):
+        return ", though this excitation hardly drives it"
+    return ""
 
 
 def _reach(check: Check) -> str:
