@@ -13,7 +13,7 @@ from modalview.model.parts import FREEDOMS, Model, Motion
 
 GRID_STEP = 24.0
 MARGIN = 12.0
-TITLE_SHARE = 0.64  # of the block, for the left column
+TITLE_SHARE = (0.45, 0.68)  # of the block, for the left column: least and most
 
 
 @dataclass(frozen=True, slots=True)
@@ -48,8 +48,8 @@ def title_lines(model: Model, *, checked: str = "not yet", freedoms: int | None 
 
 def title_size(title: str, sheet_width: float, text_scale: float) -> tuple[float, float]:
     """Return width and height of the title block in pixels: wide enough for the title, to half the sheet."""
-    need = (text_width(title, text_scale=text_scale) + 20.0) / TITLE_SHARE
-    width = min(max(need, 290.0 * text_scale), max(0.6 * sheet_width, 200.0), sheet_width - 2 * MARGIN)
+    need = (text_width(title, text_scale=text_scale) + 20.0) / TITLE_SHARE[1]
+    width = min(max(need, 330.0 * text_scale), max(0.6 * sheet_width, 200.0), sheet_width - 2 * MARGIN)
     return width, 68.0 * text_scale
 
 
@@ -57,17 +57,22 @@ def title_block(lines: TitleLines, sheet_width: float, text_scale: float) -> tup
     """Return the title block at the top right of a sheet, as wide as its longest texts, two by two."""
     width, height = title_size(lines.title, sheet_width, text_scale)
     left, top = sheet_width - MARGIN - width, MARGIN
-    split, middle = left + TITLE_SHARE * width, top + height / 2
+    wide, narrow = (
+        max(text_width(text, text_scale=text_scale) for text in column) + 16.0
+        for column in ((lines.title, lines.motion), (lines.revision, lines.checked))
+    )
+    share = min(max(wide / (wide + narrow), TITLE_SHARE[0]), TITLE_SHARE[1])
+    split, middle = left + share * width, top + height / 2
     cross = np.array([[left, middle, left + width, middle], [split, top, split, top + height]])
     items: list[Item] = [
         Box(left, top, width, height, 0.0, Role.INK, Role.PAPER, 1.2),
         Lines(cross, Role.INK, 1.0),
     ]
     cells = (
-        ("title", lines.title, left, top, TITLE_SHARE * width),
-        ("revision", lines.revision, split, top, (1 - TITLE_SHARE) * width),
-        ("motion", lines.motion, left, middle, TITLE_SHARE * width),
-        ("checked", lines.checked, split, middle, (1 - TITLE_SHARE) * width),
+        ("title", lines.title, left, top, share * width),
+        ("revision", lines.revision, split, top, (1 - share) * width),
+        ("motion", lines.motion, left, middle, share * width),
+        ("checked", lines.checked, split, middle, (1 - share) * width),
     )
     for name, text, x, y, room in cells:
         inner = room - 14.0

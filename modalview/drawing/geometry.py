@@ -278,8 +278,8 @@ def _collect_faces(
 ) -> tuple[Indices, ...]:
     """Add the faces' corners, the bodies furthest from the eye first."""
     towards = np.cross(view.matrix[0], view.matrix[1])
-    order = np.argsort(places.centres @ towards, kind="stable") if len(faces_of) else []
-    groups = []
+    order = np.argsort(places.centres @ towards, kind="stable").tolist()
+    groups: list[Indices] = []
     for number in order:
         arms = faces_of[number]
         rest = view.to_pixels(places.centres[number] + arms)

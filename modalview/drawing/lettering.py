@@ -118,7 +118,7 @@ def _name_bodies(geometry: SheetGeometry, board: Board, inner: Board, letters: _
         if not placed and geometry.train is not None:
             placed = board.place(lines, _by_disc(geometry, number))
         if not placed:
-            placed = board.place(lines, round_about(_rectangle(geometry.boxes[number])))
+            placed = board.place(lines, round_about(_rectangle(geometry.boxes[number]), 12.0))
         letters.body_labels += [(number, text) for text in placed]
         if not placed:
             letters.unlabelled.append(body.id)

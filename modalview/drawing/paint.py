@@ -1,5 +1,8 @@
 """The one module that paints a drawing, with QPainter."""
 
+from collections.abc import Callable
+from typing import cast
+
 import numpy as np
 import shiboken6
 from PySide6.QtCore import QLineF, QPointF, QRectF, Qt
@@ -53,9 +56,8 @@ class LineBuffer:
         block = np.zeros((_BLOCK, 4))
         start = block.ctypes.data
         self._blocks.append(block)  # keeps the memory that the lines look into
-        self._lines += [
-            shiboken6.Shiboken.wrapInstance(start + row * _BYTES_PER_LINE, QLineF) for row in range(_BLOCK)
-        ]
+        wrap = cast("Callable[[int, type[QLineF]], QLineF]", shiboken6.Shiboken.wrapInstance)
+        self._lines += [wrap(start + row * _BYTES_PER_LINE, QLineF) for row in range(_BLOCK)]
 
 
 _BUFFER = LineBuffer()

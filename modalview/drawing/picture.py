@@ -46,8 +46,8 @@ def save_picture(
 
 def _png(drawing: Drawing, size: tuple[int, int], palette: Palette, detail: float) -> bytes:
     _ensure_application()
-    from PySide6.QtCore import QBuffer, QIODevice  # noqa: PLC0415  (Qt is loaded only when a picture is asked for)
-    from PySide6.QtGui import QColor, QImage, QPainter  # noqa: PLC0415
+    from PySide6.QtCore import QBuffer, QByteArray, QIODevice  # noqa: PLC0415  (Qt is loaded only when a picture is asked for)
+    from PySide6.QtGui import QColor, QImage, QImageWriter, QPainter  # noqa: PLC0415
 
     from modalview.drawing.paint import paint  # noqa: PLC0415
 
@@ -65,7 +65,7 @@ def _png(drawing: Drawing, size: tuple[int, int], palette: Palette, detail: floa
     painter.end()
     buffer = QBuffer()
     buffer.open(QIODevice.OpenModeFlag.WriteOnly)
-    image.save(buffer, "PNG")
+    QImageWriter(buffer, QByteArray(b"png")).write(image)
     return bytes(buffer.data().data())
 
 

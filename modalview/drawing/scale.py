@@ -22,10 +22,11 @@ PAD = 1.15  # of the axis beyond what it shows
 LEAST_SPAN = 3.0  # highest over lowest frequency of the axis
 
 # Columns as shares of the width between the two axes.
-_DISCS = (0.43, 0.56)
-_BOUND, _COUNT = 0.60, 0.69
+_LABELS = 0.475
+_DISCS = (0.49, 0.57)
+_BOUND, _COUNT = 0.61, 0.70
 _MODE = (0.79, 0.91)
-_LABELS = 0.42
+LEAST_COLUMNS = 104.0  # pixels right of the labels; with less, the discs are folded away
 
 _RANGE_ROLE = {Verdict.IN_BAND: Role.BAD, Verdict.NOMINAL_ONLY: Role.WARN}
 
@@ -48,8 +49,17 @@ class _Frame:
     text_scale: float
     board: Board
 
+    @property
+    def labels(self) -> float:
+        """Right-hand end of the label column: large texts widen it at the cost of the others."""
+        need = 12.0 + text_width("highest mode", Size.SMALL, text_scale=self.text_scale)
+        wide = self.right - self.left
+        return self.left + min(max(need, _LABELS * wide), 0.62 * wide)
+
     def x(self, share: float) -> float:
-        return self.left + share * (self.right - self.left)
+        """Pixel of a share of the width; shares beyond the labels follow their end."""
+        beyond = (share - _LABELS) / (1 - _LABELS)
+        return self.labels + beyond * (self.right - self.labels)
 
 
 def scale_drawing(
@@ -75,6 +85,7 @@ def scale_drawing(
         text_scale,
         Board(width, height, text_scale),
     )
+    discs = discs and frame.right - frame.labels >= LEAST_COLUMNS and len(content.discs) > 0
     items = _axes(frame) + _bands(frame, content.bands)
     if discs:
         items += _discs(frame, content)
@@ -147,15 +158,17 @@ def _bands(frame: _Frame, bands: tuple[ScaleBand, ...]) -> tuple[Item, ...]:
             if axis.low_hz <= hz <= axis.high_hz
         ]
         items.append(Lines(np.array(lines).reshape(-1, 4), Role.WARN, 1.8))
+        taken = np.array([[frame.left, y - 1.0, frame.right, y + 1.0] for y in (top, bottom)])
+        frame.board.take(np.vstack([taken, *(np.array([line]) + [0, -1.0, 0, 1.0] for line in lines)]))
     for band in sorted(shown, key=lambda band: band.to):
         items += _band_label(frame, band)
     return tuple(items) + _off_scale(frame, [band for band in bands if band not in shown])
 
 
 def _band_label(frame: _Frame, band: ScaleBand) -> list[Text]:
-    room = _LABELS * (frame.right - frame.left) - 8
+    room = frame.labels - frame.left - 8
     label = shortened(band.label, room / 1.12, Size.SMALL, frame.text_scale)
-    middle = frame.axis.y_of(band.to) - 8.0 * frame.text_scale
+    middle = frame.axis.y_of(band.to) - 9.5 * frame.text_scale
     return _labelled(frame, (Line(label, Role.WARN, Size.SMALL, bold=True),), middle)
 
 
@@ -176,8 +189,10 @@ def _off_scale(frame: _Frame, bands: list[ScaleBand]) -> tuple[Item, ...]:
         y = frame.axis.top + 9 * frame.text_scale if above else frame.axis.bottom - 9 * frame.text_scale
         span = sorted({grouped(float(f"{hz:.3g}")) for hz in (band.from_, band.to)}, key=len)
         line = Line(f"{band.label} {' to '.join(span)} Hz", Role.WARN, Size.SMALL, bold=True)
-        room = (_COUNT - 0.02) * (frame.right - frame.left) - 22
-        line = Line(shortened(line.text, room / 1.12, Size.SMALL, frame.text_scale), Role.WARN, Size.SMALL, bold=True)
+        room = frame.x(_COUNT) - 12.0 * frame.text_scale - frame.left - 22
+        line = Line(
+            shortened(line.text, room / 1.12, Size.SMALL, frame.text_scale), Role.WARN, Size.SMALL, bold=True
+        )
         steps = range(0, 200, 4) if above else range(0, -200, -4)
         placed = frame.board.place((line,), [Spot(frame.left + 22, y + step, 1, 0) for step in steps])
         if placed:
@@ -189,8 +204,6 @@ def _off_scale(frame: _Frame, bands: list[ScaleBand]) -> tuple[Item, ...]:
 
 def _discs(frame: _Frame, content: ScaleContent) -> tuple[Item, ...]:
     """Draw the Gershgorin bars, thin and pale, side by side."""
-    if not len(content.discs):
-        return ()
     ordered = content.discs[np.argsort(content.discs[:, 1])]
     first, last = frame.x(_DISCS[0]), frame.x(_DISCS[1])
     pitch = min(8.0, (last - first) / max(len(ordered) - 1, 1))
@@ -210,7 +223,10 @@ def _bounds(frame: _Frame, content: ScaleContent) -> tuple[Item, ...]:
     """Draw the bounds of the lowest and of the highest mode as thick short bars, with their numbers."""
     items: list[Item] = []
     x = frame.x(_BOUND)
-    for name, pair, below in (("lowest mode", content.lowest, True), ("highest mode", content.highest, False)):
+    for name, pair, below in (
+        ("lowest mode", content.lowest, True),
+        ("highest mode", content.highest, False),
+    ):
         if pair is None:
             continue
         low, high = (frame.axis.y_of(hz) for hz in pair)
@@ -220,7 +236,9 @@ def _bounds(frame: _Frame, content: ScaleContent) -> tuple[Item, ...]:
         items.append(Lines(np.array([[x, low, x, high]]), Role.INK, 4.0))
         text = f"{significant(pair[0], 3)} to {significant(pair[1], 3)}"
         lines = (Line(name, Role.INK, Size.SMALL), Line(text, Role.INK, Size.SMALL))
-        items += _labelled(frame, lines, low + 20 * frame.text_scale if below else high - 20 * frame.text_scale)
+        items += _labelled(
+            frame, lines, low + 20 * frame.text_scale if below else high - 20 * frame.text_scale
+        )
     return tuple(items)
 
 
@@ -262,10 +280,9 @@ def _circle(count: ScaleCount, x: float, y: float, radius: float) -> list[Item]:
     role = _role(count)
     text = "?" if count.number is None else str(count.number)
     marked = role is not Role.INK
-    size = Size.SMALL if len(text) < 3 or not marked else Size.SMALL
     return [
         Circles(np.array([[x, y]]), radius, role, Role.PAPER, 2.4 if marked else 1.2),
-        Text(x, y, text, role, size, Anchor.MIDDLE, bold=marked),
+        Text(x, y, text, role, Size.SMALL, Anchor.MIDDLE, bold=marked),
     ]
 
 
@@ -289,16 +306,17 @@ def _modes(frame: _Frame, modes: tuple[ScaleMode, ...]) -> tuple[Item, ...]:
 def _titles(frame: _Frame, content: ScaleContent, *, discs: bool) -> tuple[Item, ...]:
     """Write what the columns show, under them; rigid-body modes are at zero, below every axis."""
     size, text_scale = Size.SMALL, frame.text_scale
-    columns = [(_COUNT, ("modes", "inside"))]
-    if discs and len(content.discs):
-        columns.append(((_DISCS[0] + _DISCS[1]) / 2 - 0.13, ("Gershgorin", "bounds")))
+    columns = [(frame.x(_DISCS[0]) - 20 * text_scale, ("Gershgorin", "bounds"))] if discs else []
+    columns.append((frame.x(_COUNT), ("modes", "inside")))
     if content.modes:
-        columns.append((sum(_MODE) / 2 + 0.06, ("found", "modes")))
+        columns.append((frame.x(sum(_MODE) / 2), ("found", "modes")))
+    apart = 8.0 + text_width("inside", size, text_scale=text_scale)
+    places = spread([x for x, _ in columns], apart, frame.left, frame.right + apart / 2)
     items: list[Item] = []
-    for share, lines in columns:
+    for x, (_, lines) in zip(places, columns, strict=True):
         for row, line in enumerate(lines):
             y = frame.axis.bottom + (14.0 + 13.0 * row) * text_scale
-            items.append(Text(frame.x(share), y, line, Role.MUTED, size, Anchor.MIDDLE))
+            items.append(Text(x, y, line, Role.MUTED, size, Anchor.MIDDLE))
     if content.rigid_body_modes:
         number = content.rigid_body_modes
         text = f"and {number} rigid-body mode{'s' if number > 1 else ''} at 0 Hz"

@@ -6,8 +6,10 @@ import numpy as np
 
 from modalview.bounds.discs import Discs
 from modalview.drawing.primitives import Floats
-from modalview.resonance.results import Verdict
+from modalview.resonance.results import Check, Verdict
 from modalview.study.results import Outlook, Solution
+
+RAD_PER_HZ = 2 * np.pi
 
 
 @dataclass(frozen=True, slots=True)
@@ -88,14 +90,7 @@ class ScaleContent:
 
 def scale_content(outlook: Outlook, solution: Solution | None = None) -> ScaleContent:
     """Take from an outlook, and the solution of the same model if there is one, what the scale shows."""
-    bands = tuple(
-        ScaleBand(
-            check.band.label,
-            *(omega / (2 * np.pi) for omega in (*check.band.nominal, *check.band.excitation)),
-            check.verdict,
-        )
-        for check in outlook.checks
-    )
+    bands = tuple(_band(check) for check in outlook.checks)
     counts = tuple(
         ScaleCount(interval.low_hz, interval.high_hz, interval.number, interval.check is not None)
         for interval in outlook.intervals
@@ -108,8 +103,14 @@ def scale_content(outlook: Outlook, solution: Solution | None = None) -> ScaleCo
         highest=bounds.highest_hz,
         discs=_discs_hz(bounds.symmetric),
         modes=_modes(bands, solution),
-        rigid_body_modes=bounds.rigid_body_modes,
+        rigid_body_modes=bounds.rigid_body_modes or 0,
     )
+
+
+def _band(check: Check) -> ScaleBand:
+    low, high = (omega / RAD_PER_HZ for omega in check.band.nominal)
+    from_, to = (omega / RAD_PER_HZ for omega in check.band.excitation)
+    return ScaleBand(check.band.label, low, high, from_, to, check.verdict)
 
 
 def _discs_hz(discs: Discs | None) -> Floats:
@@ -117,7 +118,7 @@ def _discs_hz(discs: Discs | None) -> Floats:
     if discs is None:
         return _none()
     ends = np.stack([discs.centres - discs.radii, discs.centres, discs.centres + discs.radii], axis=1)
-    hz: Floats = np.sqrt(np.maximum(ends, 0.0)) / (2 * np.pi)
+    hz: Floats = np.sqrt(np.maximum(ends, 0.0)) / RAD_PER_HZ
     return hz
 
 

@@ -91,7 +91,7 @@ def _frame(geometry: SheetGeometry, selected: str | None) -> tuple[Item, ...]:
         if selected == link.id or (
             selected is not None and selected in (link.from_.support, link.to.support)
         ):
-            low, high = geometry.link_ends[number].min(axis=0), geometry.link_ends[number].max(axis=0)
-            x1, y1, x2, y2 = (*(low - 13.0).tolist(), *(high + 13.0).tolist())
+            x1, y1 = (geometry.link_ends[number].min(axis=0) - 13.0).tolist()
+            x2, y2 = (geometry.link_ends[number].max(axis=0) + 13.0).tolist()
             return (Box(x1, y1, x2 - x1, y2 - y1, 6.0, Role.ACCENT, None, 1.8),)
     return ()

@@ -43,12 +43,11 @@ class View:
 
     def to_pixels(self, world: Floats) -> Floats:
         """Return (..., 2) pixels of (..., 3) world points."""
-        return self.steps(world) + np.array([self.left, self.top])
+        return np.asarray(self.steps(world) + np.array([self.left, self.top]))
 
     def steps(self, world: Floats) -> Floats:
         """Return (..., 2) pixel steps of (..., 3) world steps."""
-        stepped: Floats = (world @ self.matrix.T) * np.array([self.scale_x, -self.scale_y])
-        return stepped
+        return np.asarray((world @ self.matrix.T) * np.array([self.scale_x, -self.scale_y]))
 
     def panned(self, dx: float, dy: float) -> "View":
         """Return the view moved by pixels."""
