@@ -14,43 +14,44 @@ import scipy.sparse as sp
 from bank_solved import GENERIC, Solved, solve_text, solved
 from check_bank import Figure, cases, figures
 
+from modalview.assembly.assemble import assemble
 from modalview.assembly.parameters import Case
 from modalview.assembly.pencil import Pencil, pencil_of_terms
-from modalview.bounds.discs import Discs, discs_of
-from modalview.bounds.forms import forms_of
+from modalview.bounds.before import before_solve
+from modalview.bounds.discs import Discs
 from modalview.eigen.intervals import _Run, _tightened
 from modalview.eigen.modes import Modes
 from modalview.eigen.rayleigh import ROOT_SLACK, Energy, Rayleigh
-from modalview.eigen.solve import find_modes
+from modalview.eigen.solve import all_eigenvalues, find_modes
 from modalview.errors import FileFaultsError
 from modalview.factor.counts import count_at_most, count_below, count_negative
 from modalview.store import parse_model
 
-ROWS, COLUMNS, SYMMETRIC = range(3)
+ROWS, COLUMNS, SYMMETRIC = "rows", "columns", "symmetric"
 
 # --- discs -------------------------------------------------------------------------------------------
 
 
-def discs(found: Solved) -> tuple[Discs, Discs, Discs]:
-    """By rows and by columns of M^-1 K, and of the symmetric form."""
-    three = discs_of(found.pencil, forms_of(found.pencil))
-    assert three is not None
-    return three
+def discs(found: Solved, kind: str) -> Discs:
+    """By rows or by columns of M^-1 K, or of the symmetric form."""
+    given = getattr(before_solve(found.pencil), kind)
+    assert isinstance(given, Discs)
+    return given
 
 
-def intervals(kind: int, found: Solved, _: Any) -> list[list[float]]:
-    each = discs(found)[kind]
+def intervals(kind: str, found: Solved, _: Any) -> list[list[float]]:
+    each = discs(found, kind)
     ends = zip(each.centres - each.radii, each.centres + each.radii, strict=True)
     return [[float(low), float(high)] for low, high in ends]
 
 
-def all_inside(kinds: tuple[int, ...], found: Solved, _: Any) -> bool:
+def all_inside(kinds: tuple[str, ...], found: Solved, _: Any) -> bool:
     """Every eigenvalue lies in a group, and each group holds as many as it has discs."""
     values = found.modes.eigenvalues
     return all(
         int(np.sum((group.low <= values) & (values <= group.high))) == group.number
         for kind in kinds
-        for group in discs(found)[kind].groups
+        for group in discs(found, kind).groups
     )
 
 
@@ -99,6 +100,18 @@ def rotors() -> Solved:
         for n, soft in enumerate((near, far - near))
     ]
     return solve_text(bank_models.text("G04", "single axis", bodies, links, [{"id": "ground"}]))
+
+
+def dunkerley_hz(found: Solved) -> float:
+    """The program's lower bound of the lowest mode, which is Dunkerley's where a trace is formed."""
+    bounds = before_solve(found.pencil)
+    assert bounds.lowest_hz is not None
+    assert "Lowest mode from below: Dunkerley." in bounds.notes
+    return bounds.lowest_hz[0]
+
+
+def dunkerley(found: Solved, _: Any) -> float:
+    return 2 * math.pi * dunkerley_hz(found)
 
 
 def quotients(found: Solved, shapes: list[list[float]]) -> Rayleigh:
@@ -156,11 +169,13 @@ def band(case: Case, *_: Any) -> list[float]:
 def varied(factors: tuple[float, ...]) -> np.ndarray:
     """Frequencies of G12 with every stiffness, then every mass, multiplied."""
     tree = json.loads(bank_models.document(cases()["G12"]))
+    tree["default_tolerance"] = TOLERANCES  # the same structure as ``toleranced``
     parts = [(link, "stiffness") for link in tree["links"]] + [(body, "mass") for body in tree["bodies"]]
     for (part, key), factor in zip(parts, factors, strict=True):
         number, unit = part[key].split(" ")
         part[key] = f"{float(number) * factor!r} {unit}"
-    return np.array(solve_text(json.dumps(tree)).omega)
+    assembly = assemble(parse_model(json.dumps(tree)), toleranced().assembly)
+    return np.sqrt(all_eigenvalues(assembly.pencil()))
 
 
 def all_corners_inside(*_: Any) -> bool:
@@ -205,6 +220,10 @@ OWN = {
     "G02-number_below": number_below_shifts,
     "G02-leading_minors_at_4": partial(leading_minors, 4.0),
     "G02-leading_minors_at_6": partial(leading_minors, 6.0),
+    "G04-critical_speed": lambda *_: 60 * dunkerley_hz(rotors()),
+    "G05-dunkerley": dunkerley,
+    "G05-dunkerley_printed": dunkerley,
+    "G05-is_lower_bound": lambda found, _: dunkerley(found, _) < found.omega[0],
     "G05-exact": lambda found, _: found.omega[0],
     "G06-rayleigh": rayleigh,
     "G06-rayleigh_123_printed": lambda found, _: rayleigh(found, _)[0],

@@ -64,17 +64,17 @@ def rod_limit() -> float:
 
 
 @cache
-def pinned() -> dict[int, float]:
-    return {pieces: bank_beams.pinned_beam(pieces).omega[0] for pieces in (2, 3, 4, 8, 16, 32)}
+def pinned(pieces: int) -> float:
+    return bank_beams.pinned_beam(pieces).omega[0]
 
 
 def pinned_limit() -> float:
-    return bank_beams.limit([pinned()[pieces] for pieces in (4, 8, 16, 32)], order=4)
+    return bank_beams.limit([pinned(pieces) for pieces in (4, 8, 16, 32)], order=4)
 
 
 @cache
-def cantilevers() -> dict[int, float]:
-    return {pieces: bank_beams.cantilever(pieces).omega[0] for pieces in (1, 20, 40, 80)}
+def cantilever(pieces: int) -> float:
+    return bank_beams.cantilever(pieces).omega[0]
 
 
 def orders(errors: list[float]) -> list[float]:
@@ -83,7 +83,7 @@ def orders(errors: list[float]) -> list[float]:
 
 
 def cantilever_order() -> float:
-    coarse, middle, fine = (cantilevers()[pieces] for pieces in (20, 40, 80))
+    coarse, middle, fine = (cantilever(pieces) for pieces in (20, 40, 80))
     return math.log2((middle - coarse) / (fine - middle))
 
 
@@ -192,12 +192,12 @@ OWN = {
     "A14-omega1_continuous": lambda *_: rod_limit(),
     "A14-ratio_lumped_to_continuous": lambda *_: [value / rod_limit() for value in rods()],
     "A14-observed_order": lambda *_: orders([rod_limit() - value for value in rods()]),
-    "A16-omega1_normalised": lambda *_: [pinned()[pieces] for pieces in (2, 3, 4, 8)],
+    "A16-omega1_normalised": lambda *_: [pinned(pieces) for pieces in (2, 3, 4, 8)],
     "A16-continuous_limit": lambda *_: pinned_limit(),
-    "A16-observed_order": lambda *_: orders([pinned_limit() - pinned()[n] for n in (4, 8, 16)]),
-    "A18-omega1_N1": lambda *_: cantilevers()[1],
+    "A16-observed_order": lambda *_: orders([pinned_limit() - pinned(n) for n in (4, 8, 16)]),
+    "A18-omega1_N1": lambda *_: cantilever(1),
     "A18-richardson_limit_from_N20_N40_order2": lambda *_: bank_beams.limit(
-        [cantilevers()[20], cantilevers()[40]], order=2
+        [cantilever(20), cantilever(40)], order=2
     ),
     "A18-observed_order": lambda *_: cantilever_order(),
     "B02-second_mode_ratio_x1_over_x2": lambda found, _: ratio("m1", "m2")(found, _)[1],
