@@ -135,16 +135,21 @@ def set_tolerance_text(model: Model, address: Address, text: str) -> SetField:
 
 def set_number_text(model: Model, address: Address, text: str) -> SetField:
     """Return the edit that types a plain number, such as an order; a decimal comma is accepted."""
-    plain = text.strip().replace("\u2212", "-").replace(",", ".")
-    try:
-        number = float(plain)
-    except ValueError:
-        number = math.nan
-    if not math.isfinite(number) or "_" in plain:
+    number = _number(text)
+    if number is None:
         raise UnitError(
             f'"{text}" cannot be read as a number for {_named(address)}: write it like "7" or "0.5"'
         )
     return set_field(model, address, number, f"Set {_named(address)} to {number:g}")
+
+
+def _number(text: str) -> float | None:
+    plain = text.strip().replace("\u2212", "-").replace(",", ".")
+    try:
+        number = float(plain)
+    except ValueError:
+        return None
+    return number if math.isfinite(number) and "_" not in plain else None
 
 
 def set_plain_text(model: Model, address: Address, text: str) -> SetField:
@@ -164,7 +169,8 @@ def set_typed(model: Model, address: Address, text: str) -> SetField:
         return set_value_text(model, address, text)
     if shape.tolerance:
         return set_tolerance_text(model, address, text)
-    if shape.number and text.strip():
+    # A gear's ratio is a number, or a fraction as text.
+    if shape.number and text.strip() and not (shape.text and _number(text) is None):
         return set_number_text(model, address, text)
     if shape.text or shape.number:
         return set_plain_text(model, address, text)

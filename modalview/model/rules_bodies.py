@@ -98,14 +98,13 @@ def _can_be_mass(tensor: InertiaTensor) -> bool:
 
     With S their matrix, the inertia tensor is trace(S) I - S. S having no negative principal value is the
     same as the principal moments keeping Ixx <= Iyy + Izz, and makes the tensor positive; checked by all
-    principal minors, each against the product of the diagonal it is made of.
+    principal minors, moments taken relative to the largest.
     """
-    ixx, iyy, izz = tensor.Ixx.si, tensor.Iyy.si, tensor.Izz.si
+    size = max(tensor.Ixx.si, tensor.Iyy.si, tensor.Izz.si)  # above zero, checked before
+    ixx, iyy, izz = tensor.Ixx.si / size, tensor.Iyy.si / size, tensor.Izz.si / size
     xx, yy, zz = (iyy + izz - ixx) / 2, (ixx + izz - iyy) / 2, (ixx + iyy - izz) / 2
-    xy, xz, yz = (0.0 if p is None else p.si for p in (tensor.Pxy, tensor.Pxz, tensor.Pyz))
-    size = max(ixx, iyy, izz)
-    pairs = ((xx, yy, xy), (xx, zz, xz), (yy, zz, yz))
-    if any(p * p > a * b + ROUNDING * size * size for a, b, p in pairs):
+    xy, xz, yz = (0.0 if p is None else p.si / size for p in (tensor.Pxy, tensor.Pxz, tensor.Pyz))
+    if any(p * p > a * b + ROUNDING for a, b, p in ((xx, yy, xy), (xx, zz, xz), (yy, zz, yz))):
         return False
     determinant = xx * yy * zz + 2 * xy * xz * yz - xx * yz * yz - yy * xz * xz - zz * xy * xy
-    return not determinant < -ROUNDING * size * size * size  # ** would overflow with an error
+    return not determinant < -ROUNDING

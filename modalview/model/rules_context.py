@@ -6,12 +6,29 @@ from dataclasses import dataclass
 
 from modalview.model.parts import FREEDOMS, Body, End, Model, Motion, Point, Support
 
+# Longer ids and keys are cut in messages.
+LONGEST_NAME = 60
+
 # A rule's finding: the field it concerns, seen from its part, and what is wrong.
 Finding = tuple[str, str]
 Findings = Iterator[Finding]
 
 # Ends nearer than this share of their coordinates have no direction that could be trusted.
 COINCIDENT = 1e-9
+
+
+def cut(name: str) -> str:
+    """Return a name short enough for a message."""
+    return name if len(name) <= LONGEST_NAME else f"{name[:LONGEST_NAME]}..."
+
+
+def place_of(group: str, number: int, name: str) -> str:
+    """Return the place of a part in a list, counted from 0 as in the file.
+
+    >>> place_of("bodies", 2, "pump")
+    'bodies[2] "pump"'
+    """
+    return f'{group}[{number}] "{cut(name)}"'
 
 
 @dataclass(frozen=True, slots=True)

@@ -3,9 +3,9 @@
 import math
 
 from modalview.model.parts import Excitation, Machine, Magnitude, Margin, Motion, SpeedRange
-from modalview.model.rules_context import Context, Findings
+from modalview.model.rules_context import Context, Findings, place_of
 from modalview.model.rules_values import above_zero, direction, end, not_negative, share, space_axis
-from modalview.model.values import Entry
+from modalview.model.values import Entry, is_sane
 
 KINDS_OF_MAGNITUDE = ("force", "torque", "unbalance", "grade", "motion")
 # A single axis cannot turn and a shaft train cannot shift.
@@ -31,7 +31,7 @@ def machine(given: Machine, context: Context) -> Findings:
     yield from _margins_given(given)
     seen: set[str] = set()
     for number, excitation in enumerate(given.excitations):
-        place = f'excitations[{number}] "{excitation.id}"'
+        place = place_of("excitations", number, excitation.id)
         if excitation.id in seen:
             yield (
                 f"{place} . id",
@@ -98,8 +98,8 @@ def _order(given: Excitation, owner: Machine, context: Context) -> Findings:
         found = "both are given" if given.order is not None else "neither is given"
         yield "order", f"an excitation has an order of the speed or a fixed frequency; {found}"
     if given.order is not None:
-        if given.order <= 0 or math.isinf(given.order):
-            yield "order", f"must be above zero; found {given.order:g}"
+        if given.order <= 0 or not (is_sane(given.order) or math.isnan(given.order)):
+            yield "order", f"must be above zero and a number of a machine; found {given.order:g}"
         if owner.speed is None:
             yield "order", "is a multiple of the machine's speed, which is missing; give the machine a speed"
     if given.of is None:

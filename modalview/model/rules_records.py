@@ -8,7 +8,7 @@ from modalview.model.addresses import Address, look, quantity_of
 from modalview.model.parts import Limit, LoadCase, LoadChange, MeasuredPeak, Model
 from modalview.model.rules_context import Context, Findings
 from modalview.model.rules_values import above_zero, direction, end, not_negative, share, tolerance
-from modalview.model.values import Value
+from modalview.model.values import Value, is_sane
 from modalview.units.parse import read
 from modalview.units.quantities import ACCELERATION, LENGTH, VELOCITY, Quantity
 
@@ -56,7 +56,7 @@ def measured(given: MeasuredPeak, context: Context) -> Findings:
     for number, point in enumerate(given.shape):
         yield from end(f"shape[{number}] . at", point.at, context)
         yield from direction(f"shape[{number}] . direction", point.direction, context)
-        if math.isinf(point.amplitude):
+        if not (is_sane(point.amplitude) or math.isnan(point.amplitude)):
             yield f"shape[{number}] . amplitude", "must be a finite number"
 
 

@@ -6,7 +6,7 @@ from collections.abc import Sequence
 from modalview.errors import UnitError
 from modalview.model.parts import Axes, Direction, End, Motion
 from modalview.model.rules_context import Context, Findings, points
-from modalview.model.values import Entry, Tolerance, Value
+from modalview.model.values import Entry, Tolerance, Value, is_sane
 from modalview.units.parse import read
 from modalview.units.quantities import ANGLE
 
@@ -95,8 +95,8 @@ def vector(key: str, given: Sequence[float] | None, context: Context) -> Finding
         return
     if len(given) != context.dimensions:
         yield key, f"has {len(given)} numbers; in {context.motion.value} it needs {context.dimensions}"
-    elif not all(math.isfinite(number) for number in given):
-        yield key, f"needs finite numbers; found {list(given)}"
+    elif not all(is_sane(number) or math.isnan(number) for number in given):
+        yield key, f"needs finite numbers of any sensible size; found {list(given)}"
     elif not any(given):
         yield key, "has no length: all its numbers are zero"
 

@@ -13,8 +13,8 @@ def typed_entry(text: str, quantity: Quantity) -> Entry:
     >>> typed_entry("4,2 mm", LENGTH)
     Entry(text='4.2 mm', si=0.0042)
     """
-    number = read_noted(text, quantity, window=True).si
-    return Entry(text.strip().replace(",", "."), number)
+    read_noted(text, quantity, window=True)  # refuses a comma with two readings, in the words as typed
+    return Entry.typed(text.strip().replace(",", "."), quantity)
 
 
 def tolerance_text(tolerance: Tolerance | None) -> str:

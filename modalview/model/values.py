@@ -3,8 +3,22 @@
 from dataclasses import dataclass
 from typing import Any
 
+from modalview.errors import UnitError
 from modalview.units.parse import read
 from modalview.units.quantities import RATIO, Quantity
+
+# No number of a machine is beyond these in SI; squares and products of those within stay floating-point
+# numbers, so that nothing computed from a typed value can overflow or vanish.
+SMALLEST, LARGEST = 1e-30, 1e30
+
+
+def is_sane(number: float) -> bool:
+    """Tell whether a number is zero or of a size that can be computed with.
+
+    >>> is_sane(0.0), is_sane(-4e8), is_sane(1e300), is_sane(float("nan"))
+    (True, True, False, False)
+    """
+    return number == 0 or SMALLEST <= abs(number) <= LARGEST
 
 
 @dataclass(frozen=True, slots=True)
@@ -24,8 +38,14 @@ class Entry:
 
     @classmethod
     def typed(cls, text: str, quantity: Quantity) -> "Entry":
-        """Read ``text`` as ``quantity``; raise UnitError when it is not one."""
-        return cls(text, read(text, quantity))
+        """Read ``text`` as ``quantity``; raise UnitError when it is not one, or of no machine's size."""
+        si = read(text, quantity)
+        if not is_sane(si):
+            size = f"{si:g} {quantity.si_unit}" if quantity.si_unit != "1" else f"{si:g}"
+            raise UnitError(
+                f'"{text}" is {size}; no machine has such a {quantity.name}: check unit and power'
+            )
+        return cls(text, si)
 
 
 @dataclass(frozen=True, slots=True)

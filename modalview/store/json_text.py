@@ -5,6 +5,7 @@ their place and along with every other fault.
 """
 
 import json
+from collections import Counter
 from typing import Any
 
 from modalview.errors import Fault, FileFaultsError
@@ -19,8 +20,8 @@ class JsonMap(dict[str, Any]):
         super().__init__(pairs)
         self.repeated: tuple[str, ...] = ()
         if len(self) != len(pairs):
-            keys = [key for key, _ in pairs]
-            self.repeated = tuple(key for key in self if keys.count(key) > 1)
+            times = Counter(key for key, _ in pairs)
+            self.repeated = tuple(key for key in self if times[key] > 1)
 
 
 class NotFinite:

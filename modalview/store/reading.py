@@ -22,6 +22,8 @@ VERSION = 1
 # A file beyond these is a mistake or an attack; both are refused before any long work.
 LARGEST_BYTES = 200_000_000
 MOST_FREEDOMS = 200_000
+# Nobody reads more faults than this; the rest is told by its number.
+MOST_FAULTS = 1000
 
 
 def read_model(path: str | os.PathLike[str]) -> Model:
@@ -84,13 +86,20 @@ def parse_model(text: str) -> Model:
     model = walk.record(Model, tree, "", besides=("format", "version"))
     if "motion" not in tree:
         walk.fault("motion", f"is missing: say how the bodies move, {_motions()}")
-    faults = list(walk.faults)
-    if not {"bodies", "supports"} & set(walk.spoiled):
-        faults += [fault for fault in rules.faults(model) if not _covered(fault.path, walk.spoiled)]
+    faults = walk.faults
+    # Without its bodies and supports, or with most of it unreadable, a model has no meaning to check.
+    if not {"bodies", "supports"} & set(walk.spoiled) and len(faults) < MOST_FAULTS:
+        faults = faults + [fault for fault in rules.faults(model) if not _covered(fault.path, walk.spoiled)]
     if faults:
-        raise FileFaultsError(tuple(faults))
+        raise FileFaultsError(_shortened(faults))
     checked: Model = model
     return checked
+
+
+def _shortened(faults: list[Fault]) -> tuple[Fault, ...]:
+    more = len(faults) - MOST_FAULTS
+    last = (Fault("", f"{more} more faults were found; mend these first"),) if more > 0 else ()
+    return (*faults[:MOST_FAULTS], *last)
 
 
 def _check_header(tree: JsonMap) -> None:

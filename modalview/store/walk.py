@@ -13,15 +13,16 @@ from typing import Any
 from modalview.errors import Fault, UnitError
 from modalview.model.fields import Field, Shape, fields_of, quantity_in
 from modalview.model.parts import LINK_KINDS, Link, Motion
-from modalview.model.values import Entry, JsonObject, Tolerance, Value
+from modalview.model.rules_context import LONGEST_NAME, cut, place_of
+from modalview.model.values import Entry, JsonObject, Tolerance, Value, is_sane
 from modalview.store.json_text import JsonMap, NotFinite
 from modalview.units.quantities import RATIO, Quantity
 
 # Objects in `given` may nest, but not so deeply that writing them could fail.
 DEEPEST_GIVEN = 32
 LONGEST_SHOWN = 40
-# Plain numbers (orders, components of vectors) beyond this would overflow the simplest arithmetic.
-LARGEST = 1e100
+# Looking for the key that was meant is slow; past so many faults it no longer helps.
+MOST_HINTS = 200
 BLANK = Entry("", math.nan)
 
 _VALUE_KEYS = ("value", "tolerance", "source", "status", "by", "given")
@@ -38,7 +39,7 @@ def shown(node: Any) -> str:
         return "an object {...}" if isinstance(node, dict) else "a list [...]"
     if node is None or isinstance(node, bool):
         return {None: "null; leave out a key that has no value", True: "true", False: "false"}[node]
-    return f"the number {node}" if abs(node) < LARGEST else "a number beyond all measure"
+    return f"the number {node}" if is_sane(node) else "a number beyond all measure"
 
 
 def _wanted(shape: Shape, quantity: Quantity | None) -> str:
@@ -170,7 +171,7 @@ class Walk:
     def _number(self, shape: Shape, node: float) -> Any:
         if shape.integer:
             return node if isinstance(node, int) else None
-        if shape.number and abs(node) < LARGEST:
+        if shape.number and is_sane(node):
             return node
         return None
 
@@ -185,7 +186,7 @@ class Walk:
 
     def _item_path(self, path: str, number: int, item: Any) -> str:
         name = item.get("id") if isinstance(item, JsonMap) else None
-        return f'{path}[{number}] "{name}"' if isinstance(name, str) else f"{path}[{number}]"
+        return place_of(path, number, name) if isinstance(name, str) else f"{path}[{number}]"
 
     def _object(self, shape: Shape, quantity: Quantity | None, node: JsonMap, path: str) -> Any:
         if shape.mapping:
@@ -273,15 +274,17 @@ class Walk:
 
     def _check_keys(self, node: JsonMap, known: tuple[str, ...], path: str) -> None:
         for key in node.repeated:
-            self.fault(f"{path} . {key}" if path else key, "is given twice; keep one")
+            self.fault(f"{path} . {cut(key)}" if path else cut(key), "is given twice; keep one")
         for key in node:
             if key not in known:
-                where = f"{path} . {key}" if path else key
-                self.faults.append(Fault(where, f"is not a key here{_near(key, known)}"))
+                where = f"{path} . {cut(key)}" if path else cut(key)
+                near = _near(key, known) if len(self.faults) < MOST_HINTS else ""
+                self.faults.append(Fault(where, f"is not a key here{near}"))
 
 
 def _near(word: Any, known: tuple[str, ...]) -> str:
-    close = get_close_matches(word, known, n=1) if isinstance(word, str) else []
+    short = isinstance(word, str) and len(word) <= LONGEST_NAME
+    close = get_close_matches(word, known, n=1) if short else []
     if close:
         return f'; did you mean "{close[0]}"?'
     return f"; known are {', '.join(known)}" if len(known) <= 12 else ""

@@ -171,6 +171,9 @@ CASES = [
     (SINGLE, "bodies.0.mass", float("nan"), 'bodies[0] "a" . mass', "NaN, which is not a number"),
     (SINGLE, "bodies.0.mass", "nan kg", 'bodies[0] "a" . mass', "plain number"),
     (SINGLE, "bodies.0.mass", "1e999 kg", 'bodies[0] "a" . mass', "too large"),
+    (SINGLE, "bodies.0.mass", "1e200 kg", 'bodies[0] "a" . mass', "check unit and power"),
+    (SINGLE, "bodies.0.mass", "1e-200 kg", 'bodies[0] "a" . mass', "check unit and power"),
+    (PLANE, "links.0.direction", [1e-200, 1], 'links[0] "k" . direction[0]', "beyond all measure"),
     (SINGLE, "bodies.0.mass", "-1 kg", 'bodies[0] "a" . mass', "must not be negative"),
     (SINGLE, "bodies.0.mass", GONE, 'bodies[0] "a" . mass', "is missing"),
     (SINGLE, "bodies.0.id", GONE, "bodies[0] . id", "is missing"),
@@ -498,6 +501,23 @@ def test_more_freedoms_than_can_be_solved_are_refused_before_the_walk():
     text = '{"format": "keepclear", "version": 1, "motion": "space", "bodies": [' + bodies[:-1] + "]}"
     (fault,) = faults_of(text)
     assert "200004 degrees of freedom; the most is 200000" in fault.reason
+
+
+def test_so_many_faults_are_counted_not_listed():
+    tree = {
+        **SINGLE,
+        "bodies": [{"id": f"b{i}", "mass": "1 m"} for i in range(1500)],
+        "links": [],
+        "machines": [],
+    }
+    found = faults_of(tree)
+    assert len(found) == 1001
+    assert found[-1].reason == "500 more faults were found; mend these first"
+
+
+def test_a_monstrous_id_or_key_is_cut_in_messages():
+    found = faults_of({**SINGLE, "x" * 1000: 1, "bodies": [{"id": "y" * 1000, "mass": "1 m"}]})
+    assert max(len(str(fault.path)) for fault in found) < 100
 
 
 def test_repeated_keys_are_remembered():
