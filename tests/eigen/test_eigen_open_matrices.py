@@ -174,7 +174,7 @@ def test_networks_match_their_matrices() -> None:
 
 
 def test_repeated_frequencies_are_subspaces() -> None:
-    """The five chains of 2BEG are partly equal: frequencies repeat, exactly or to 1e-9 (one triple to 5e-12)."""
+    """The five chains of 2BEG are partly equal: frequencies repeat, most exactly, some to 1e-9."""
     truth = [Decimal(value) for value in read("gnm_2beg_chains").spectrum()]
     apart = [i + 1 for i, (one, two) in enumerate(pairwise(truth)) if two - one > Decimal("1e-9") * two]
     modes = by_terms("gnm_2beg_chains")
