@@ -1,114 +1,152 @@
-"""How many modes a band holds: now, at some values within tolerance, at every one."""
+"""How many modes lie in a band: now, at some values within tolerance, at all of them."""
 
-from dataclasses import dataclass
+from dataclasses import dataclass, field
 
-from modalview.assembly.pencil import Pencil
-from modalview.factor.counts import count_at_most, count_below
+import numpy as np
 
-SOFT_HEAVY, STIFF_LIGHT = "soft-heavy", "stiff-light"
+from modalview.factor.counts import Count, count_at_most, count_below
+from modalview.factor.shifted import ShiftedPencil
 
-Span = tuple[float, float]
+
+@dataclass(frozen=True, slots=True, eq=False)
+class Cases:
+    """One model at three sets of values; the same object thrice where nothing has a tolerance.
+
+    Parameters
+    ----------
+    nominal : ShiftedPencil
+    soft_heavy : ShiftedPencil
+        Every stiffness at its least and every mass at its largest: no frequency is lower at other values
+        within tolerance (Courant-Fischer).
+    stiff_light : ShiftedPencil
+        The reverse: no frequency is higher.
+    """
+
+    nominal: ShiftedPencil
+    soft_heavy: ShiftedPencil
+    stiff_light: ShiftedPencil
+
+
+@dataclass(frozen=True, slots=True)
+class EdgeCount:
+    """One count that a band rests on.
+
+    Parameters
+    ----------
+    case : str
+        "nominal", "soft-heavy" or "stiff-light".
+    side : str
+        "at most" or "below".
+    omega : float
+        Edge asked for, rad/s.
+    count : Count
+        With the edge used, rad**2/s**2, and its uncertainty.
+    """
+
+    case: str
+    side: str
+    omega: float
+    count: Count
 
 
 @dataclass(frozen=True, slots=True)
 class BandCount:
-    """Numbers of modes in a closed band, rigid-body modes left out; None is undecided.
+    """Modes in a band, rigid-body modes left out.
 
     Parameters
     ----------
     inside : int or None
-        N(hi) - N(lo) at nominal values; N(hi) counts <= hi, N(lo) counts < lo.
+        At nominal values; never fewer than there are; None is undecided.
     possible : int or None
-        N_soft(hi) - N_stiff(lo): no combination of values within tolerance has more in the band.
+        At some values within tolerance: never fewer than can be.
     certain : int or None
-        max(0, N_stiff(hi) - N_soft(lo)): no combination has fewer.
-    modes : int
-        Of the whole model.
-    below_everywhere : bool
-        Every mode lies below the band at any value within tolerance.
-    deciding_case : str or None
-        "soft-heavy" or "stiff-light", whichever brings a mode into the band that is not there at nominal
-        values; None when neither does (only the speed tolerance reaches a mode, or none is reached).
-    undecided : tuple of str
-        Cases whose counts rounding leaves open.
+        At every value within tolerance: never more than there are; without tolerances the same as
+        ``inside``.
+    evidence : tuple of EdgeCount
+        Every count made, in order.
     """
 
     inside: int | None
     possible: int | None
     certain: int | None
-    modes: int
-    below_everywhere: bool
-    deciding_case: str | None
-    undecided: tuple[str, ...]
-
-
-@dataclass(frozen=True, slots=True)
-class _Edges:
-    """Modes up to the upper edge and below the lower edge, of one pencil; None is undecided."""
-
-    upto: int | None
-    below: int | None
+    evidence: tuple[EdgeCount, ...]
 
     @property
-    def between(self) -> int | None:
-        return _less(self.upto, self.below)
+    def undecided(self) -> tuple[str, ...]:
+        """The counts that rounding left open, in words."""
+        return tuple(
+            f"{edge.case}, {edge.side} {edge.omega:.6g} rad/s"
+            for edge in self.evidence
+            if edge.count.number is None
+        )
 
 
 def count_band(
-    nominal: Pencil, soft: Pencil, stiff: Pencil, band: Span, widened: Span | None = None
+    cases: Cases, nominal_band: tuple[float, float], tolerance_band: tuple[float, float] | None = None
 ) -> BandCount:
-    """Count the modes in a band at nominal values and over all tolerances.
+    """Count the modes in a band at nominal values, at some and at all values within tolerance.
 
     Parameters
     ----------
-    nominal, soft, stiff : Pencil
-        The three cases; the same object three times without tolerances (then counted once).
-    band : pair of float
-        Closed band at nominal speed, rad/s.
-    widened : pair of float or None
-        The band with the speed tolerance, for the tolerance cases; the same as ``band`` when None.
+    cases : Cases
+    nominal_band : (lo, hi)
+        rad/s, ends included.
+    tolerance_band : (lo, hi) or None
+        The same widened by the speed's tolerance, for ``possible``; None is ``nominal_band``.
+
+    Returns
+    -------
+    BandCount
+        inside = N(hi) - N(lo) nominal; possible = N_soft(hi) - N_stiff(lo) in the tolerance band, both with
+        edges outward, so that a mode on the edge is in; certain = max(0, N_stiff(hi) - N_soft(lo)) in the
+        nominal band with edges inward, so that a mode on the edge is not called certain. N(hi) counts
+        <= hi, N(lo) counts < lo and at least the rigid-body modes.
 
     Notes
     -----
-    Ordered eigenvalues only rise with any stiffness and only fall with any mass, so that N_stiff(lambda)
-    <= N(lambda) <= N_soft(lambda) for all values within tolerance (Courant-Fischer: R. Courant, D. Hilbert,
-    Methods of Mathematical Physics I, chapter 1, from memory). Counts are one-sided and lie outward.
+    At most six counts; two where none is possible, since then none is inside and none certain, and two
+    where nothing has a tolerance.
     """
-    wide = band if widened is None else widened
-    here = _edges(nominal, band)
-    there = here if wide == band else _edges(nominal, wide)
-    low = there if soft is nominal else _edges(soft, wide)
-    high = there if stiff is nominal else _edges(stiff, wide)
-    certain = _less(high.upto, low.below)
-    return BandCount(
-        inside=here.between,
-        possible=_less(low.upto, high.below),
-        certain=None if certain is None else max(0, certain),
-        modes=nominal.modes,
-        below_everywhere=high.below == nominal.modes,
-        deciding_case=_deciding(there, low, high),
-        undecided=_undecided(here, low, high),
+    lo, hi = nominal_band
+    low, high = tolerance_band or nominal_band
+    tally = _Tally()
+    exact = cases.soft_heavy is cases.nominal and cases.stiff_light is cases.nominal
+    if exact and (low, high) == (lo, hi):
+        inside = _difference(
+            tally.at_most("nominal", cases.nominal, hi), tally.below("nominal", cases.nominal, lo)
+        )
+        return BandCount(inside, inside, inside, tuple(tally.evidence))
+    names = ("nominal", "nominal") if exact else ("soft-heavy", "stiff-light")
+    soft, stiff = (names[0], cases.soft_heavy), (names[1], cases.stiff_light)
+    possible = _difference(tally.at_most(*soft, high), tally.below(*stiff, low))
+    if possible == 0 and low <= lo <= hi <= high:
+        return BandCount(0, 0, 0, tuple(tally.evidence))
+    inside = _difference(
+        tally.at_most("nominal", cases.nominal, hi), tally.below("nominal", cases.nominal, lo)
     )
+    if inside == 0:
+        return BandCount(0, possible, 0, tuple(tally.evidence))
+    certain = inside if exact else _difference(tally.below(*stiff, hi), tally.at_most(*soft, lo))
+    return BandCount(inside, possible, certain, tuple(tally.evidence))
 
 
-def _edges(pencil: Pencil, band: Span) -> _Edges:
-    shifted = pencil.shifted
-    return _Edges(count_at_most(shifted, band[1] ** 2).number, count_below(shifted, band[0] ** 2).number)
+@dataclass(slots=True)
+class _Tally:
+    """Counts made so far."""
+
+    evidence: list[EdgeCount] = field(default_factory=list)
+
+    def at_most(self, case: str, shifted: ShiftedPencil, omega: float) -> int | None:
+        count = count_at_most(shifted, float(np.nextafter(omega * omega, np.inf)))
+        self.evidence.append(EdgeCount(case, "at most", omega, count))
+        return count.number
+
+    def below(self, case: str, shifted: ShiftedPencil, omega: float) -> int | None:
+        # a square of zero stays zero: nothing below it lies in any band
+        count = count_below(shifted, max(0.0, float(np.nextafter(omega * omega, -np.inf))))
+        self.evidence.append(EdgeCount(case, "below", omega, count))
+        return count.number
 
 
-def _less(upper: int | None, lower: int | None) -> int | None:
-    return None if upper is None or lower is None else upper - lower
-
-
-def _deciding(there: _Edges, low: _Edges, high: _Edges) -> str | None:
-    """Return which case moves a mode into the band, the one that moves more if both do."""
-    fallen = (low.upto or 0) - (there.upto or 0)
-    risen = (there.below or 0) - (high.below or 0)
-    if None in (low.upto, there.upto, there.below, high.below) or max(fallen, risen) <= 0:
-        return None
-    return SOFT_HEAVY if fallen >= risen else STIFF_LIGHT
-
-
-def _undecided(here: _Edges, low: _Edges, high: _Edges) -> tuple[str, ...]:
-    named = (("nominal", here.between), (SOFT_HEAVY, low.upto), (STIFF_LIGHT, high.below))
-    return tuple(name for name, number in named if number is None)
+def _difference(upper: int | None, lower: int | None) -> int | None:
+    return None if upper is None or lower is None else max(0, upper - lower)

@@ -8,7 +8,7 @@ import numpy.typing as npt
 import scipy.sparse as sp
 
 from modalview.assembly.pencil import Pencil
-from modalview.bounds.forms import Forms, mass_is_diagonal
+from modalview.bounds.forms import Forms, Matrix, mass_is_diagonal, row_sums, scaled
 from modalview.factor.rounding import SLACK, gamma
 
 Array = npt.NDArray[np.float64]
@@ -75,34 +75,36 @@ def discs_of(pencil: Pencil, forms: Forms) -> tuple[Discs, Discs, Discs] | None:
     if not have_discs(pencil):
         return None
     ratio, rounding = scaled_ratio(pencil, forms)
-    ones = np.ones(pencil.modes)
     return (
-        _discs(ratio, rounding @ ones, "rows"),
-        _discs(sp.csr_array(ratio.T), rounding.T @ ones, "columns"),
-        _discs(forms.S, forms.share * forms.spread, "symmetric"),
+        _discs(ratio, row_sums(rounding), "rows"),
+        _discs(ratio.T, row_sums(rounding.T), "columns"),
+        _discs(forms.S, forms.rounding(np.ones(forms.modes)), "symmetric"),
     )
 
 
-def scaled_ratio(pencil: Pencil, forms: Forms) -> tuple[sp.csr_array, sp.csr_array]:
+def scaled_ratio(pencil: Pencil, forms: Forms) -> tuple[Matrix, Matrix]:
     """Return the scaled M^-1 K (modes, modes) and a bound of its rounding, entry by entry; 1/s**2."""
-    massy = np.flatnonzero(~pencil.massless)
-    root = sp.csr_array(pencil.basis)[massy]
-    mass = sp.csr_array(pencil.M)[massy][:, massy]
+    massy = ~pencil.massless
     scale = pencil.scale[massy]
-    left, right = sp.diags_array(scale) @ root, (mass @ sp.diags_array(1 / scale))
-    ratio = sp.csr_array(left @ forms.S @ (root.T @ right))
-    spread = forms.absolute.T @ (forms.formation @ forms.absolute)
-    rounding = abs(left) @ spread @ (abs(root).T @ abs(right))
+    if mass_is_diagonal(pencil):
+        mass = pencil.M.diagonal()[massy]
+        left, right = scale / np.sqrt(mass), np.sqrt(mass) / scale
+        share = SLACK * (forms.share + gamma(8))
+        return scaled(forms.S, left, right), scaled(forms.spread, share * left, right)
+    root = sp.csr_array(pencil.basis)[massy]
     width = int(np.diff(root.indptr).max(initial=1))
-    share = forms.share + gamma(6 * width + 10)
-    return ratio, sp.csr_array(SLACK * share * rounding)
+    block = sp.csr_array(pencil.M)[massy][:, massy]
+    share = SLACK * (forms.share + gamma(6 * width + 10))
+    ratio = root @ forms.S @ (root.T @ block)
+    rounding = abs(root) @ forms.spread @ (abs(root).T @ abs(block))
+    return scaled(ratio, scale, 1 / scale), scaled(rounding, share * scale, 1 / scale)
 
 
-def _discs(matrix: sp.csr_array, rounding: Array, kind: Kind) -> Discs:
-    centres = matrix.diagonal()
-    reach = np.asarray(abs(matrix).sum(axis=1), dtype=float).ravel()
-    radii = np.maximum(reach - np.abs(centres), 0.0) + gamma(np.diff(matrix.indptr) + 4) * reach
-    radii = np.nextafter(radii + SLACK * rounding, np.inf)
+def _discs(matrix: Matrix, rounding: Array, kind: Kind) -> Discs:
+    centres = np.array(matrix.diagonal())
+    reach = row_sums(matrix)
+    radii = np.maximum(reach - np.abs(centres), 0.0) + gamma(centres.size + 4) * reach
+    radii = np.nextafter(radii + rounding, np.inf)
     for array in (centres, radii):
         array.setflags(write=False)
     return Discs(centres, radii, kind, groups_of(centres, radii))

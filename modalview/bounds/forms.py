@@ -12,34 +12,40 @@ from modalview.factor.rounding import SLACK, UNIT, gamma
 Array = npt.NDArray[np.float64]
 
 
+# Up to this many modes the forms are dense: each sparse operation costs as much overhead as a whole dense
+# product of this size.
+DENSE = 200
+
+Matrix = Array | sp.csr_array | sp.csc_array
+
+
 @dataclass(frozen=True, slots=True, eq=False)
 class Forms:
-    """S and the scaled M^-1 K of the coordinates with inertia, massless ones condensed.
+    """S = W.T K W of the coordinates with inertia, massless ones condensed; dense where small.
 
     Attributes
     ----------
-    S : csr_array (modes, modes)
-        W.T K W, 1/s**2.
+    S : array or csr_array (modes, modes)
+        1/s**2.
+    spread : array or csr_array (modes, modes)
+        |W|.T formation |W|.
     share : float
-        |S - true S| <= share |W|.T formation |W|, entry by entry.
-    spread : array (modes,)
-        |W|.T formation |W| 1.
-    absolute : csr_array (n, modes)
-        |W|.
-    formation : csc_array (n, n)
-        What rounding in K is proportional to.
+        |S - true S| <= share spread, entry by entry.
     """
 
-    S: sp.csr_array
+    S: Matrix
+    spread: Matrix
     share: float
-    spread: Array
-    absolute: sp.csr_array
-    formation: sp.csc_array
+
+    @property
+    def modes(self) -> int:
+        """Number of modes."""
+        return int(self.S.shape[0])
 
     def rounding(self, vector: Array) -> Array:
         """Bound |S - true S| times a non-negative vector (modes,)."""
-        spread = self.absolute.T @ (self.formation @ (self.absolute @ vector))
-        return np.asarray(SLACK * self.share * spread, dtype=float)
+        product: Array = self.spread @ vector
+        return SLACK * self.share * product
 
 
 def forms_of(pencil: Pencil) -> Forms:
@@ -53,22 +59,38 @@ def forms_of(pencil: Pencil) -> Forms:
     (Ostrowski) and is measured. A wrong static recovery dR changes S by dR.T K00 dR only, of second order.
     """
     basis = pencil.basis
-    absolute = sp.csr_array(abs(basis))
-    formation = pencil.formation
     terms = 0 if pencil.rows is None else int(np.bincount(pencil.rows.indices, minlength=1).max())
     entries = int(np.diff(basis.indptr).max(initial=1))
     share = gamma(terms + 2 * entries + 12) + 2 * _defect(pencil)
     if pencil.massless.any():
         share += (pencil.n * UNIT / max(pencil.shifted.extents.margin, UNIT)) ** 2
-    ones = np.ones(pencil.modes)
-    spread = absolute.T @ (formation @ (absolute @ ones))
-    return Forms(
-        S=sp.csr_array(pencil.standard),
-        share=share,
-        spread=np.asarray(SLACK * spread, dtype=float),
-        absolute=absolute,
-        formation=formation,
-    )
+    if pencil.modes > DENSE:
+        absolute = abs(basis)
+        spread = sp.csr_array(absolute.T @ (pencil.formation @ absolute))
+        return Forms(sp.csr_array(pencil.standard), spread, share)
+    W = basis.toarray()
+    half = W.T @ (pencil.K @ W)
+    size = np.abs(W)
+    return Forms((half + half.T) / 2, size.T @ (pencil.formation @ size), share)
+
+
+def scaled(matrix: Matrix, left: Array, right: Array) -> Matrix:
+    """Return diag(left) matrix diag(right)."""
+    if isinstance(matrix, np.ndarray):
+        dense: Array = left[:, None] * matrix * right
+        return dense
+    return sp.csr_array(sp.diags_array(left) @ matrix @ sp.diags_array(right))
+
+
+def magnitude(matrix: Matrix) -> Matrix:
+    """Return |matrix|, entry by entry."""
+    return np.abs(matrix) if isinstance(matrix, np.ndarray) else sp.csr_array(abs(matrix))
+
+
+def row_sums(matrix: Matrix) -> Array:
+    """Sum |entries| of every row."""
+    sums: Array = magnitude(matrix) @ np.ones(matrix.shape[1])
+    return sums
 
 
 def mass_is_diagonal(pencil: Pencil) -> bool:

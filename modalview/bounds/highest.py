@@ -14,6 +14,6 @@ def highest_bounds(forms: Forms) -> tuple[float, float]:
     (low, high) : floats, rad**2/s**2
         Rounded outward. A diagonal entry is a Rayleigh quotient, so never above the largest eigenvalue.
     """
-    diagonal = forms.S.diagonal() - forms.share * forms.spread
+    diagonal = forms.S.diagonal() - forms.rounding(np.ones(forms.modes))
     low = float(np.nextafter(diagonal.max(initial=0.0), -np.inf))
     return max(low, 0.0), collatz_wielandt(forms)

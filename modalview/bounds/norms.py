@@ -6,7 +6,7 @@ import numpy as np
 
 from modalview.bounds.discs import Discs
 from modalview.bounds.forms import Forms
-from modalview.factor.rounding import SLACK, gamma
+from modalview.factor.rounding import gamma
 
 
 @dataclass(frozen=True, slots=True)
@@ -33,11 +33,11 @@ def norms_of(forms: Forms, discs: tuple[Discs, Discs, Discs] | None) -> Norms:
     ----------
     R. A. Horn, C. R. Johnson (2013), Matrix Analysis, 2nd ed., section 5.6: no eigenvalue exceeds a norm.
     """
-    modes = forms.S.shape[0]
-    total = float(np.sqrt(np.sum(forms.S.data**2))) * (1 + gamma(forms.S.nnz + 4))
+    entries = forms.S.ravel() if isinstance(forms.S, np.ndarray) else forms.S.data
+    total = float(np.linalg.norm(entries)) * (1 + gamma(entries.size + 4))
     # ||F||_F <= sqrt(modes) ||F||_2, and the largest row sum bounds the 2-norm of symmetric F
-    rounding = forms.share * float(np.sqrt(modes)) * float(forms.spread.max(initial=0.0))
-    frobenius = total + SLACK * rounding
+    rounding = forms.rounding(np.ones(forms.modes)).max(initial=0.0)
+    frobenius = total + float(np.sqrt(forms.modes) * rounding)
     if discs is None:
         return Norms(None, None, frobenius)
     rows, columns, _ = discs

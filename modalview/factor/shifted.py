@@ -7,6 +7,7 @@ import numpy as np
 import numpy.typing as npt
 import scipy.sparse as sp
 
+from modalview.errors import NumericalError
 from modalview.factor.dense import dense_inertia
 from modalview.factor.held import held_margin
 from modalview.factor.pattern import Factors, Pattern, union_pattern
@@ -35,7 +36,7 @@ class Inertia:
     method : str
         "sparse LDL^T" or "dense Bunch-Kaufman".
     lu : SuperLU or None
-        The sparse factors, in the stored order.
+        The sparse factors, in the stored order; there also where pivoting made the count worthless.
     """
 
     sigma: float
@@ -144,7 +145,7 @@ class ShiftedPencil:
             return Inertia(sigma, 0, np.inf, "sparse LDL^T")
         turned = pattern.turned
         if not (np.array_equal(lu.perm_r, turned) and np.array_equal(lu.perm_c, turned)):
-            return Inertia(sigma, 0, np.inf, "sparse LDL^T")
+            return Inertia(sigma, 0, np.inf, "sparse LDL^T", lu)
         tau = self._tau(sigma)
         vector = self._vector(tau)
         if pattern.factors is not None and pattern.factors.describe(lu):
@@ -153,6 +154,19 @@ class ShiftedPencil:
             pivots, rounding = _unmirrored(pattern.terms, lu, vector)
         delta = self._uncertainty(sigma, tau, rounding)
         return Inertia(sigma, int(np.count_nonzero(pivots < 0)), delta, "sparse LDL^T", lu)
+
+    def solve(self, found: Inertia, right: Array) -> Array:
+        """Return x with (K - sigma M) x = right, (n,) or (n, q), from the factors found at sigma.
+
+        Raises NumericalError where K - sigma M was singular.
+        """
+        if found.lu is None:
+            raise NumericalError(f"K - sigma M is singular at sigma = {found.sigma:g} rad²/s².")
+        stored = self.pattern.stored
+        turned = np.empty_like(right)
+        turned[stored] = right
+        solution: Array = found.lu.solve(turned)[stored]
+        return solution
 
     def factorize_dense(self, sigma: float) -> Inertia:
         """Count by dense Bunch-Kaufman pivots: any shift, n**3 operations; the same reading of the result.
