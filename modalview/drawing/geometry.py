@@ -18,7 +18,7 @@ Indices = np.ndarray[tuple[int, ...], np.dtype[np.int_]]
 LARGEST_STEP = (270.0, 175.0)
 LARGEST_ROW = 110.0  # the same between parallel shafts
 TWIST = 24.0  # pixels of the largest rotation beside a shaft
-ROUNDS = 3  # of fitting: sizes follow the scale, the scale follows the sizes
+ROUNDS = 2  # of fitting: sizes follow the scale, the scale follows the sizes
 
 
 @dataclass(frozen=True, slots=True, eq=False)

@@ -3,11 +3,14 @@
 from dataclasses import dataclass
 
 import numpy as np
+import numpy.typing as npt
 
 from modalview.drawing.primitives import Anchor, Floats, Role, Size, Text
 from modalview.drawing.textsize import line_height, text_width
 
 Rectangle = tuple[float, float, float, float]  # x, y, width, height
+Truths = npt.NDArray[np.bool_]
+_BATCH = 8  # spots tried at once: most labels find room among the first
 
 
 @dataclass(frozen=True, slots=True)
@@ -69,22 +72,32 @@ class Board:
             Where the label must lie; None is the sheet.
         """
         size = self.size(lines)
-        for spot in spots:
-            left = spot.x + (spot.right - 1) / 2 * size[0]
-            top = spot.y + (spot.down - 1) / 2 * size[1]
-            box = np.array([left, top, left + size[0], top + size[1]])
-            if self._inside(box, within) and not self._meets(box):
-                self.take(box[None] + np.array([-3.0, -1.0, 3.0, 1.0]))
-                return self._texts(lines, spot, (left, top, *size))
+        offered = np.array([(spot.x, spot.y, spot.right, spot.down) for spot in spots]).reshape(-1, 4)
+        corners = offered[:, :2] + (offered[:, 2:] - 1) / 2 * size
+        boxes = np.hstack([corners, corners + size])
+        free = np.flatnonzero(self._inside(boxes, within))
+        if not len(free):
+            return []
+        near = self._near(boxes[free])
+        for some in np.array_split(free, range(_BATCH, len(free), _BATCH)):
+            clear = some[~_meet(boxes[some], near)]
+            if len(clear):
+                first = int(clear[0])
+                self.take(boxes[first : first + 1] + np.array([-3.0, -1.0, 3.0, 1.0]))
+                left, top = corners[first].tolist()
+                return self._texts(lines, spots[first], (left, top, *size))
         return []
 
-    def _inside(self, box: Floats, within: Rectangle | None) -> bool:
+    def _inside(self, boxes: Floats, within: Rectangle | None) -> Truths:
         x, y, width, height = within or (2.0, 2.0, self.sheet[0] - 4.0, self.sheet[1] - 4.0)
-        return bool(box[0] >= x and box[1] >= y and box[2] <= x + width and box[3] <= y + height)
+        inside: Truths = ((boxes >= [x, y, x, y]) & (boxes <= [x + width, y + height] * 2)).all(axis=1)
+        return inside
 
-    def _meets(self, box: Floats) -> bool:
+    def _near(self, boxes: Floats) -> Floats:
+        """Return the taken rectangles that any of the boxes could meet."""
         taken = self._taken[: self._count]
-        return bool(((taken[:, :2] < box[2:]) & (taken[:, 2:] > box[:2])).all(axis=1).any())
+        low, high = boxes[:, :2].min(axis=0), boxes[:, 2:].max(axis=0)
+        return taken[_meet(np.array([[*low, *high]]), taken, each=True)]
 
     def _texts(self, lines: tuple[Line, ...], spot: Spot, box: Rectangle) -> list[Text]:
         left, top, width, _ = box
@@ -96,6 +109,14 @@ class Board:
             texts.append(Text(x, top + height / 2, line.text, line.role, line.size, anchor, line.bold))
             top += height
         return texts
+
+
+def _meet(boxes: Floats, taken: Floats, *, each: bool = False) -> Truths:
+    """Return which boxes meet any of the taken ones; with ``each``, which taken ones meet the only box."""
+    x1, y1, x2, y2 = (boxes[:, side, None] for side in range(4))
+    left, top, right, bottom = taken.T
+    meets: Truths = (left < x2) & (right > x1) & (top < y2) & (bottom > y1)
+    return meets[0] if each else meets.any(axis=1)
 
 
 def extent(texts: list[Text], text_scale: float) -> tuple[float, float, float, float]:

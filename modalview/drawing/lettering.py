@@ -111,13 +111,15 @@ def _foot_boxes(geometry: SheetGeometry) -> Floats:
 def _name_bodies(geometry: SheetGeometry, board: Board, inner: Board, letters: _Letters) -> None:
     for number, body in enumerate(geometry.model.bodies):
         name, *values = body_lines(geometry.model, body)
+        if len(geometry.model.bodies) > MOST_LABELS:
+            values = []
         lines = (Line(name, bold=True), *(Line(text, Role.MUTED) for text in values))
         x1, y1, x2, y2 = geometry.fronts[number].tolist()
         within = (x1 + 3, y1 + 1, x2 - x1 - 6, y2 - y1 - 2)
         placed = inner.place(lines, _inside(within, board.size(lines)), within=within)
         if not placed and geometry.train is not None:
             placed = board.place(lines, _by_disc(geometry, number))
-        if not placed:
+        if not placed and values:
             placed = board.place(lines, round_about(_rectangle(geometry.boxes[number]), 12.0))
         letters.body_labels += [(number, text) for text in placed]
         if not placed:

@@ -8,7 +8,17 @@ from modalview.drawing.furniture import TitleLines, axes, grid, title_block
 from modalview.drawing.geometry import LinkGroup, SheetGeometry
 from modalview.drawing.layout import GROUND
 from modalview.drawing.primitives import Circles, Floats, Item, Lines, Polygons, Role
-from modalview.drawing.symbols import JOINTS, TEMPLATES, Symbol, between, dashed, ground, outline
+from modalview.drawing.symbols import (
+    COARSE,
+    JOINTS,
+    MANY,
+    TEMPLATES,
+    Symbol,
+    between,
+    dashed,
+    ground,
+    outline,
+)
 from modalview.model.parts import Motion
 
 MARK = 5.5  # radius of the centre of gravity mark, pixels
@@ -19,12 +29,19 @@ def part_items(geometry: SheetGeometry, points: Floats) -> tuple[Item, ...]:
     """Return links and bodies at the given points (points, 2)."""
     under = [item for group in geometry.links if not group.on_top for item in _link(geometry, group, points)]
     over = [item for group in geometry.links if group.on_top for item in _link(geometry, group, points)]
-    width = 1.7 if geometry.grow > 0.8 else 1.3
-    # Parts behind a body in space shimmer through, as hidden edges are told by faint lines.
-    fill = 0.86 if geometry.model.motion is Motion.SPACE else 1.0
-    bodies = [Polygons(points[indices], Role.INK, Role.PAPER, width, fill) for indices in geometry.faces]
+    bodies = _bodies(geometry, points)
     over += ground_items(geometry, on_top=True)
     return (*under, *bodies, *over, *_marks(geometry, points), *_teeth(geometry))
+
+
+def _bodies(geometry: SheetGeometry, points: Floats) -> list[Item]:
+    # Parts behind a body in space shimmer through, as hidden edges are told by faint lines.
+    fill = 0.86 if geometry.model.motion is Motion.SPACE else 1.0
+    if len(geometry.centres) > MANY:
+        fills = [Polygons(points[indices], None, Role.PAPER, 0.0, fill) for indices in geometry.faces]
+        return [*fills, *(Lines(outline(points[indices]), Role.INK, 1.0) for indices in geometry.faces)]
+    width = 1.7 if geometry.grow > 0.8 else 1.3
+    return [Polygons(points[indices], Role.INK, Role.PAPER, width, fill) for indices in geometry.faces]
 
 
 def ground_items(geometry: SheetGeometry, *, on_top: bool = False) -> tuple[Item, ...]:
@@ -106,6 +123,8 @@ def _link(geometry: SheetGeometry, group: LinkGroup, points: Floats) -> list[Ite
     template, width = TEMPLATES[symbol]
     if group.joint:
         template = JOINTS.get(symbol, template)
+    elif len(ends) > MANY:
+        template, width = COARSE.get(symbol, template), min(width, 1.0)
     items: list[Item] = [Lines(between(template, ends, grow), Role.INK, max(width * grow, 1.0))]
     if symbol is Symbol.RIGID:
         items.append(Circles(ends.reshape(-1, 2), DOT * grow, Role.INK, Role.INK))
@@ -114,7 +133,8 @@ def _link(geometry: SheetGeometry, group: LinkGroup, points: Floats) -> list[Ite
 
 def _marks(geometry: SheetGeometry, points: Floats) -> tuple[Item, ...]:
     """Return the quartered circles at the centres of gravity; in a corner where places carry no meaning."""
-    if geometry.grow < 0.8 or geometry.model.motion is Motion.SHAFT_TRAIN or not len(geometry.centres):
+    count = len(geometry.centres)
+    if geometry.grow < 0.8 or geometry.model.motion is Motion.SHAFT_TRAIN or not 0 < count <= MANY:
         return ()
     centres = points[geometry.centres]
     if geometry.model.motion is Motion.SINGLE_AXIS:

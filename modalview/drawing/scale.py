@@ -160,7 +160,7 @@ def _bands(frame: _Frame, bands: tuple[ScaleBand, ...]) -> tuple[Item, ...]:
         items.append(Lines(np.array(lines).reshape(-1, 4), Role.WARN, 1.8))
         taken = np.array([[frame.left, y - 1.0, frame.right, y + 1.0] for y in (top, bottom)])
         frame.board.take(np.vstack([taken, *(np.array([line]) + [0, -1.0, 0, 1.0] for line in lines)]))
-    for band in sorted(shown, key=lambda band: band.to):
+    for band in sorted(shown, key=lambda band: -band.to):
         items += _band_label(frame, band)
     return tuple(items) + _off_scale(frame, [band for band in bands if band not in shown])
 
@@ -168,8 +168,10 @@ def _bands(frame: _Frame, bands: tuple[ScaleBand, ...]) -> tuple[Item, ...]:
 def _band_label(frame: _Frame, band: ScaleBand) -> list[Text]:
     room = frame.labels - frame.left - 8
     label = shortened(band.label, room / 1.12, Size.SMALL, frame.text_scale)
-    middle = frame.axis.y_of(band.to) - 9.5 * frame.text_scale
-    return _labelled(frame, (Line(label, Role.WARN, Size.SMALL, bold=True),), middle)
+    line = (Line(label, Role.WARN, Size.SMALL, bold=True),)
+    own, gap = frame.axis.y_of(band.to), 9.5 * frame.text_scale
+    beside = [Spot(frame.left + 6, own - gap, 1, 0), Spot(frame.left + 6, own + gap, 1, 0)]
+    return frame.board.place(line, beside) or _labelled(frame, line, own - gap)
 
 
 def _labelled(frame: _Frame, lines: tuple[Line, ...], y: float) -> list[Text]:
