@@ -30,6 +30,10 @@ SLOW = ("anm_2xhe", "bcsst11", "foundation")
 BIG = pytest.mark.slow
 ALL = [*COPIED, *BESIDE, *(pytest.param(name, marks=BIG) for name in SLOW)]
 
+# Graded or large sets where rounding leaves counts near the softest modes undecided, honestly: the proven
+# uncertainty exceeds 1e-6 of the shift (bcsst11: all but the two highest of ten shifts).
+SOME_UNDECIDED = ("shaft", "bcsst11", "anm_2xhe", "foundation")
+
 read = cache(open_data.read)
 
 
@@ -148,11 +152,7 @@ def test_counts_at_ten_shifts(name: str) -> None:
         for count in (count_at_most(shifted, shift), count_below(shifted, shift)):
             assert count.number in (below, None)
             decided += count.number is not None
-    assert decided == 20 or name in GRADED
-
-
-# Rounding in K leaves shifts near the softest modes undecided where highest over lowest exceeds 1e9.
-GRADED = ("shaft", "bcsst11")
+    assert decided == 20 or (name in SOME_UNDECIDED and decided >= 4)
 
 
 @pytest.mark.parametrize("name", COPIED)
