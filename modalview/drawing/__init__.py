@@ -1,7 +1,7 @@
 """Lines, hatches and texts of sheet, mode picture and frequency scale.
 
 Everything but ``paint`` and ``picture`` is free of Qt: a picture is a ``primitives.Drawing``, a tuple of
-items in pixels (x right, y down) whose colours are roles. ``paint.paint(painter, drawing, colours)`` draws it.
+items in pixels (x right, y down) whose colours are roles. ``paint.paint(painter, drawing, palette)`` paints.
 
 The sheet, in ``sheet``, built once per model and window size:
 

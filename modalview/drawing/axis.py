@@ -1,6 +1,7 @@
 """A logarithmic frequency axis on the sheet."""
 
 from dataclasses import dataclass
+from itertools import pairwise
 
 import numpy as np
 
@@ -51,7 +52,7 @@ class Axis:
         for steps in _STEPS:
             found = self._round(steps)
             places = [self.y_of(hz) for hz in found]
-            if all(one - other >= apart for one, other in zip(places, places[1:], strict=False)):
+            if all(one - other >= apart for one, other in pairwise(places)):
                 return tuple(found)
         return tuple(found[:: max(1, len(found) // 4)])
 

@@ -27,7 +27,7 @@ class Line:
 class Spot:
     """A place offered to a label: a point, and where the label lies from it.
 
-    ``right`` and ``down`` are -1, 0 or 1: left of, centred on or right of the point, and above, level or below.
+    ``right`` is -1, 0 or 1: left of the point, centred on it, right of it; ``down`` likewise above to below.
     """
 
     x: float
@@ -90,8 +90,8 @@ class Board:
 
     def _inside(self, boxes: Floats, within: Rectangle | None) -> Truths:
         x, y, width, height = within or (2.0, 2.0, self.sheet[0] - 4.0, self.sheet[1] - 4.0)
-        inside: Truths = ((boxes >= [x, y, x, y]) & (boxes <= [x + width, y + height] * 2)).all(axis=1)
-        return inside
+        left, top, right, bottom = boxes.T
+        return np.asarray((left >= x) & (top >= y) & (right <= x + width) & (bottom <= y + height))
 
     def _near(self, boxes: Floats) -> Floats:
         """Return the taken rectangles that any of the boxes could meet."""
@@ -115,8 +115,8 @@ def _meet(boxes: Floats, taken: Floats, *, each: bool = False) -> Truths:
     """Return which boxes meet any of the taken ones; with ``each``, which taken ones meet the only box."""
     x1, y1, x2, y2 = (boxes[:, side, None] for side in range(4))
     left, top, right, bottom = taken.T
-    meets: Truths = (left < x2) & (right > x1) & (top < y2) & (bottom > y1)
-    return meets[0] if each else meets.any(axis=1)
+    meets = np.asarray((left < x2) & (right > x1) & (top < y2) & (bottom > y1))
+    return np.asarray(meets[0] if each else meets.any(axis=1))
 
 
 def extent(texts: list[Text], text_scale: float) -> tuple[float, float, float, float]:

@@ -63,7 +63,10 @@ def _taken(geometry: SheetGeometry) -> Floats:
         taken += [_arrow_room(geometry)]
     else:
         room = train.dial_radius + 6
-        taken += [np.hstack([train.dials - room, train.dials + room]), train.axes + [0.0, -TWIST, 0.0, TWIST]]
+        taken += [
+            np.hstack([train.dials - room, train.dials + room]),
+            train.axes + np.array([0.0, -TWIST, 0.0, TWIST]),
+        ]
     return np.vstack(taken)
 
 

@@ -8,7 +8,7 @@ from modalview.drawing.layout import GROUND, Layout
 from modalview.drawing.primitives import Floats
 from modalview.drawing.symbols import Symbol
 from modalview.drawing.view import View
-from modalview.model.parts import Beam, Damper, Gear, Link, Model, Motion, Mount, RigidLink, Shaft
+from modalview.model.parts import Link, Model, Motion, Mount, RigidLink, Spring
 
 SHORTEST = 46.0  # pixels of a link to the ground
 JOINT = 15.0  # half length of a link whose ends coincide on two bodies
@@ -79,22 +79,11 @@ def _in_front(places: Layout) -> np.ndarray[tuple[int], np.dtype[np.bool_]]:
 
 
 def _symbol(link: Link, motion: Motion) -> Symbol:
-    match link:
-        case Damper():
-            return Symbol.DAMPER
-        case Mount() if link.stiffness is None:
-            return Symbol.DAMPER
-        case Mount():
-            return Symbol.MOUNT
-        case Shaft():
-            return Symbol.SHAFT
-        case Beam():
-            return Symbol.BEAM
-        case RigidLink():
-            return Symbol.RIGID
-        case Gear():
-            return Symbol.GEAR
-    return Symbol.SHAFT if motion is Motion.SHAFT_TRAIN else Symbol.SPRING
+    if isinstance(link, Mount) and link.stiffness is None:
+        return Symbol.DAMPER
+    if isinstance(link, Spring) and motion is Motion.SHAFT_TRAIN:
+        return Symbol.SHAFT
+    return Symbol(link.kind)
 
 
 def _across(ends: Floats) -> Floats:

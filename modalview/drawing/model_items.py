@@ -23,6 +23,7 @@ from modalview.model.parts import Motion
 
 MARK = 5.5  # radius of the centre of gravity mark, pixels
 DOT = 3.4  # radius of a rigid link's ends
+FULL = 0.8  # below this size, symbols are simplified
 
 
 def part_items(geometry: SheetGeometry, points: Floats) -> tuple[Item, ...]:
@@ -40,7 +41,7 @@ def _bodies(geometry: SheetGeometry, points: Floats) -> list[Item]:
     if len(geometry.centres) > MANY:
         fills = [Polygons(points[indices], None, Role.PAPER, 0.0, fill) for indices in geometry.faces]
         return [*fills, *(Lines(outline(points[indices]), Role.INK, 1.0) for indices in geometry.faces)]
-    width = 1.7 if geometry.grow > 0.8 else 1.3
+    width = 1.7 if geometry.grow >= FULL else 1.3
     return [Polygons(points[indices], Role.INK, Role.PAPER, width, fill) for indices in geometry.faces]
 
 
@@ -65,9 +66,9 @@ def ghost_items(geometry: SheetGeometry) -> tuple[Item, ...]:
 
 
 def train_items(geometry: SheetGeometry) -> tuple[Item, ...]:
-    """Return a shaft train's end views at rest."""
+    """Return a shaft train's end views at rest; small pictures have none."""
     train = geometry.train
-    if train is None:
+    if train is None or geometry.grow < FULL:
         return ()
     rest = np.hstack([train.dials, train.dials - [0.0, train.dial_radius]])
     return (
@@ -134,7 +135,7 @@ def _link(geometry: SheetGeometry, group: LinkGroup, points: Floats) -> list[Ite
 def _marks(geometry: SheetGeometry, points: Floats) -> tuple[Item, ...]:
     """Return the quartered circles at the centres of gravity; in a corner where places carry no meaning."""
     count = len(geometry.centres)
-    if geometry.grow < 0.8 or geometry.model.motion is Motion.SHAFT_TRAIN or not 0 < count <= MANY:
+    if geometry.grow < FULL or geometry.model.motion is Motion.SHAFT_TRAIN or not 0 < count <= MANY:
         return ()
     centres = points[geometry.centres]
     if geometry.model.motion is Motion.SINGLE_AXIS:

@@ -11,12 +11,14 @@ from modalview.model.parts import Model
 FULL_HEIGHT = 260.0
 LEAST_GROW, MOST_GROW = 0.3, 0.7
 MARGIN = 12.0
+FOOT = 30.0
 
 
 def mode_geometry(model: Model, width: float, height: float) -> SheetGeometry:
     """Lay a model out for small pictures of a size in pixels."""
     grow = min(max(height / FULL_HEIGHT, LEAST_GROW), MOST_GROW)
-    area = (MARGIN, MARGIN, max(width - 2 * MARGIN, 20.0), max(height - 2 * MARGIN, 20.0))
+    foot = FOOT * grow  # feet that stand too close to their body are moved down
+    area = (MARGIN, MARGIN, max(width - 2 * MARGIN, 20.0), max(height - 2 * MARGIN - foot, 20.0))
     return bare_geometry(model, (width, height), area, None, grow)
 
 

@@ -8,6 +8,7 @@ from modalview.drawing.furniture import TitleLines, sheet_of
 from modalview.drawing.geometry import SheetGeometry
 from modalview.drawing.layout import GROUND
 from modalview.drawing.model_items import (
+    FULL,
     axis_items,
     excitation_items,
     ghost_items,
@@ -101,14 +102,14 @@ def frame(geometry: SheetGeometry, posed: Pose, factor: float) -> Drawing:
 
 
 def frozen(geometry: SheetGeometry, posed: Pose, factor: float = 1.0) -> Drawing:
-    """Return a frame that tells the motion standing still: arrows of direction and size, still parts marked."""
+    """Return a frame that tells the motion standing still: arrows, and parts that stand still marked."""
     drawing = frame(geometry, posed, factor)
     items = drawing.items + _arrows(geometry, posed, factor) + _still_marks(geometry, posed)
     return sheet_of(items, geometry.width, geometry.height, geometry.text_scale)
 
 
 def still_drawing(geometry: SheetGeometry, title: TitleLines | None) -> Drawing:
-    """Return what lies under the frames: paper, ground, labels of links, title block and the ghost at rest."""
+    """Return what lies under the frames: paper, ground, labels, title block and the ghost at rest."""
     items = paper_items(geometry, title) + ground_items(geometry) + ghost_items(geometry)
     items += axis_items(geometry) + train_items(geometry) + excitation_items(geometry)
     items += leader_items(geometry)
@@ -137,14 +138,16 @@ def _twist(geometry: SheetGeometry, posed: Pose, factor: float) -> tuple[Item, .
     marks = geometry.points.rest[geometry.centres] + factor * posed.centre_steps
     stems = np.hstack([geometry.points.rest[geometry.centres], marks])
     line = np.hstack([marks[train.pairs[:, 0]], marks[train.pairs[:, 1]]])
-    swing = factor * posed.turns * DIAL_SWING
-    rim = train.dials + train.dial_radius * np.stack([-np.sin(swing), -np.cos(swing)], axis=1)
-    return (
+    shown = (
         Lines(stems, Role.ACCENT, 1.0),
         Lines(line, Role.ACCENT, 2.2),
         Circles(marks, 3.2 * max(geometry.grow, 0.6), Role.ACCENT, Role.ACCENT),
-        Lines(np.hstack([train.dials, rim]), Role.ACCENT, 2.2 * max(geometry.grow, 0.6)),
     )
+    if geometry.grow < FULL:
+        return shown
+    swing = factor * posed.turns * DIAL_SWING
+    rim = train.dials + train.dial_radius * np.stack([-np.sin(swing), -np.cos(swing)], axis=1)
+    return (*shown, Lines(np.hstack([train.dials, rim]), Role.ACCENT, 2.2))
 
 
 def _arrows(geometry: SheetGeometry, posed: Pose, factor: float) -> tuple[Item, ...]:
@@ -177,5 +180,6 @@ def _still_marks(geometry: SheetGeometry, posed: Pose) -> tuple[Item, ...]:
     still = geometry.boxes[posed.sizes <= STILL, :2]
     if not len(still):
         return ()
-    bars = np.hstack([still - [9.0, 0.0], still + [9.0, 0.0]])
+    half = np.array([9.0, 0.0])
+    bars = np.hstack([still - half, still + half])
     return (Circles(still, 6.0, Role.INK, Role.PAPER, 1.4), Lines(bars, Role.INK, 1.8))

@@ -153,7 +153,7 @@ def _preferred(number: int, places: Layout, upright: int, scales: Floats, grow: 
 
 
 def _discs(model: Model, places: Layout, view: View, shapes: tuple[str, ...], grow: float) -> Floats:
-    """Return half sizes of discs seen from the side: heavier ones taller, gears in touch at the pitch line."""
+    """Return half sizes of discs seen from the side: heavier ones taller, gears in touch."""
     inertia = np.array([_inertia(body) for body in model.bodies])
     top = inertia.max(initial=0.0)
     share = (inertia / top if top > 0 else np.ones(len(inertia))) ** 0.2  # a fifth power: J of similar discs

@@ -1,7 +1,6 @@
 """The one module that paints a drawing, with QPainter."""
 
-from collections.abc import Callable
-from typing import cast
+from typing import TYPE_CHECKING, cast
 
 import numpy as np
 import shiboken6
@@ -23,6 +22,9 @@ from modalview.drawing.primitives import (
     Text,
 )
 from modalview.drawing.textsize import PIXELS
+
+if TYPE_CHECKING:
+    from collections.abc import Callable
 
 # Rows of a buffer are wrapped in blocks of this many, so that a growing picture wraps seldom.
 _BLOCK = 1024

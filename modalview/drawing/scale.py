@@ -26,6 +26,7 @@ _LABELS = 0.475
 _DISCS = (0.49, 0.57)
 _BOUND, _COUNT = 0.61, 0.70
 _MODE = (0.79, 0.91)
+HAIR = np.array([0.0, -1.0, 0.0, 1.0])  # what a level line takes, pixels
 LEAST_COLUMNS = 104.0  # pixels right of the labels; with less, the discs are folded away
 
 _RANGE_ROLE = {Verdict.IN_BAND: Role.BAD, Verdict.NOMINAL_ONLY: Role.WARN}
@@ -159,7 +160,7 @@ def _bands(frame: _Frame, bands: tuple[ScaleBand, ...]) -> tuple[Item, ...]:
         ]
         items.append(Lines(np.array(lines).reshape(-1, 4), Role.WARN, 1.8))
         taken = np.array([[frame.left, y - 1.0, frame.right, y + 1.0] for y in (top, bottom)])
-        frame.board.take(np.vstack([taken, *(np.array([line]) + [0, -1.0, 0, 1.0] for line in lines)]))
+        frame.board.take(np.vstack([taken, np.array(lines).reshape(-1, 4) + HAIR]))
     for band in sorted(shown, key=lambda band: -band.to):
         items += _band_label(frame, band)
     return tuple(items) + _off_scale(frame, [band for band in bands if band not in shown])

@@ -78,6 +78,8 @@ JOINTS: dict[Symbol, Floats] = {
     ),
 }
 
+STROKES = 6  # hatching one ground symbol
+
 # With more links of a kind than MANY, lines of one pixel and fewer teeth: a fifth of the painting.
 MANY = 150
 COARSE: dict[Symbol, Floats] = {
@@ -132,9 +134,9 @@ def ground(feet: Floats, outward: Floats, half: float = 20.0) -> Floats:
         return np.zeros((0, 4))
     across = np.stack([-outward[:, 1], outward[:, 0]], axis=1)
     surface = np.hstack([feet - half * across, feet + half * across])
-    steps = np.linspace(-half + 5, half, round(half / 4))
+    steps = np.linspace(-0.75 * half, half, STROKES)
     tops = feet[:, None] + steps[:, None] * across[:, None]
-    strokes = np.concatenate([tops, tops + 7.0 * outward[:, None] - 6.0 * across[:, None]], axis=2)
+    strokes = np.concatenate([tops, tops + 0.33 * half * (outward - across)[:, None]], axis=2)
     lines: Floats = np.vstack([surface, strokes.reshape(-1, 4)])
     return lines
 

@@ -1,4 +1,4 @@
-"""How much room a text takes, without Qt: widths err on the wide side, so that what fits here fits on screen."""
+"""How much room a text takes, without Qt; widths err on the wide side, so that what fits here fits."""
 
 from modalview.drawing.primitives import Size
 
