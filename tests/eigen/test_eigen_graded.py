@@ -10,7 +10,7 @@ from modalview.assembly.pencil import Pencil, pencil_of_terms
 from modalview.eigen.solve import find_modes
 
 DIGITS = 80
-# Measured: 6e-16 at worst, over 1500 random models of up to 16 modes.
+# Measured: 8e-16 at worst over 1,000 random models with positive terms of up to 16 modes.
 ACCURACY = 1e-14
 N = 16
 
