@@ -110,6 +110,11 @@ class ShiftedPencil:
         """Number of coordinates, massless ones included."""
         return self.pattern.n
 
+    @property
+    def modes(self) -> int:
+        """Number of modes: coordinates with inertia."""
+        return int(self.extents.basis_t.shape[0])
+
     def factorize(self, sigma: float) -> Inertia:
         """Count by the signs of sparse pivots; uncertainty infinite where pivoting broke the symmetry.
 

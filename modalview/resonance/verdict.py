@@ -2,7 +2,7 @@
 
 from dataclasses import dataclass
 
-from modalview.bounds.bands import BandCount
+from modalview.bounds.bands import BandCount, Cases, count_band
 from modalview.resonance.results import Band, Check, Verdict
 from modalview.resonance.wording import band_text, modes_text
 
@@ -30,14 +30,14 @@ class Exactness:
         return f" ({self.exact} {'value' if self.exact == 1 else 'values'} taken as exact)"
 
 
-def judge(band: Band, count: BandCount, exactness: Exactness) -> Check:
-    """Return the verdict of one check.
+def judge(band: Band, cases: Cases, exactness: Exactness) -> Check:
+    """Return the verdict of one check, from counts alone.
 
     Parameters
     ----------
     band : Band
-    count : BandCount
-        Modes in the band now, at some values and at every value within tolerance.
+    cases : Cases
+        The model at nominal, soft-heavy and stiff-light values, ready to be counted.
     exactness : Exactness
         For the wording of "clear".
 
@@ -48,11 +48,17 @@ def judge(band: Band, count: BandCount, exactness: Exactness) -> Check:
     that undecided. R. Courant and D. Hilbert, Methods of Mathematical Physics I, chapter 1: ordered
     natural frequencies only rise with any stiffness and only fall with any mass (from memory).
     """
+    count = count_band(cases, band.nominal, band.tolerance)
     if count.inside is None or count.inside > 0:
         return _in_band(band, count)
     if count.possible is None or count.possible > 0:
-        return _nominal_only(band, count)
-    above_all = count.below_everywhere
+        return _nominal_only(band, count, cases)
+    return _clear(band, count, cases, exactness)
+
+
+def _clear(band: Band, count: BandCount, cases: Cases, exactness: Exactness) -> Check:
+    below = next(edge.count.number for edge in count.evidence if edge.side == "below")
+    above_all = below == cases.nominal.modes
     wording = ("clear in this model" if above_all else "clear") + exactness.words
     if above_all:
         reason = f"{band_text(band)} lies above every mode of this model; local modes are not modelled"
@@ -64,31 +70,47 @@ def judge(band: Band, count: BandCount, exactness: Exactness) -> Check:
 
 
 def _in_band(band: Band, count: BandCount) -> Check:
-    undecided: tuple[str, ...] = ()
     if count.inside is None:
         reason = f"rounding leaves undecided whether a mode lies within {band_text(band)}; taken as one"
-        undecided = ("nominal",)
     else:
         always = ", at any value within tolerance" if count.certain else ""
         reason = f"{modes_text(count.inside)} within {band_text(band)}{always}"
-    return _check(band, count, Verdict.IN_BAND, Verdict.IN_BAND.value, reason, undecided)
+    return _check(band, count, Verdict.IN_BAND, Verdict.IN_BAND.value, reason)
 
 
-def _nominal_only(band: Band, count: BandCount) -> Check:
-    undecided: tuple[str, ...] = ()
+def _nominal_only(band: Band, count: BandCount, cases: Cases) -> Check:
+    deciding = None
     if count.possible is None:
-        undecided = count.undecided
-        reason = f"rounding leaves the {' and the '.join(undecided)} count of {band_text(band)} undecided"
-    elif count.deciding_case is None:
-        reason = f"only the tolerance of the speed reaches a mode: {band_text(band)} is widened by it"
+        reason = f"rounding leaves undecided whether some values within tolerance reach {band_text(band)}"
     else:
-        reach = f"the {count.deciding_case} case reaches {band_text(band)}"
-        reason = f"no mode lies in the band at nominal values, but {reach}"
-    return _check(band, count, Verdict.NOMINAL_ONLY, Verdict.NOMINAL_ONLY.value, reason, undecided)
+        deciding = _deciding_case(band, count, cases)
+        reach = f"the {deciding} case" if deciding else "the tolerance of the speed alone"
+        reason = f"no mode lies in the band at nominal values, but {reach} reaches {band_text(band)}"
+    return _check(band, count, Verdict.NOMINAL_ONLY, Verdict.NOMINAL_ONLY.value, reason, deciding)
+
+
+def _deciding_case(band: Band, count: BandCount, cases: Cases) -> str | None:
+    """Return which case brings a mode into a band that is empty at nominal values.
+
+    Soft-heavy brings modes down past the upper edge, stiff-light up past the lower one; the one that
+    moves more where both do. None where the band as widened by the speed tolerance holds a mode at
+    nominal values already.
+    """
+    here = count_band(Cases(cases.nominal, cases.nominal, cases.nominal), band.tolerance)
+    if here.inside != 0:
+        return None
+    fallen = _number(count, "soft-heavy", "at most") - _number(here, "nominal", "at most")
+    risen = _number(here, "nominal", "below") - _number(count, "stiff-light", "below")
+    return "soft-heavy" if fallen >= risen else "stiff-light"
+
+
+def _number(count: BandCount, case: str, side: str) -> int:
+    """Return one of the counts a band rests on; they are decided where this is asked."""
+    return next(e.count.number or 0 for e in count.evidence if e.case == case and e.side == side)
 
 
 def _check(
-    band: Band, count: BandCount, verdict: Verdict, wording: str, reason: str, undecided: tuple[str, ...] = ()
+    band: Band, count: BandCount, verdict: Verdict, wording: str, reason: str, deciding: str | None = None
 ) -> Check:
     return Check(
         band=band,
@@ -98,8 +120,8 @@ def _check(
         inside=count.inside,
         possible=count.possible,
         certain=count.certain,
-        deciding_case=count.deciding_case if verdict is Verdict.NOMINAL_ONLY else None,
-        undecided=undecided,
+        deciding_case=deciding,
+        undecided=count.undecided,
     )
 
 

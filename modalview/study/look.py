@@ -5,7 +5,7 @@ from time import perf_counter
 
 from modalview.assembly.assemble import Assembly, assemble
 from modalview.assembly.parameters import Case
-from modalview.bounds.bands import count_band
+from modalview.bounds.bands import Cases
 from modalview.bounds.before import before_solve
 from modalview.errors import CancelledError
 from modalview.resonance.bands import bands
@@ -57,12 +57,11 @@ def look(request: Request, previous: Outlook | None = None) -> Outlook:
 
 def _checks(request: Request, assembly: Assembly) -> tuple[Check, ...]:
     exactness = Exactness(assembly.taken_as_exact, sum(p.family != "damping" for p in assembly.parameters))
-    nominal, soft, stiff = (assembly.pencil(case) for case in Case)
+    cases = Cases(*(assembly.pencil(case).shifted for case in Case))
     found = []
     for band in bands(request.model):
         _stop_if(request)
-        count = count_band(nominal, soft, stiff, band.nominal, band.tolerance)
-        found.append(judge(band, count, exactness))
+        found.append(judge(band, cases, exactness))
     return tuple(found)
 
 
