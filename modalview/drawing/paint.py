@@ -155,8 +155,14 @@ class _Painting:
 
     def font(self, size: Size, *, bold: bool) -> tuple[QFont, QFontMetricsF]:
         if (size, bold) not in self.fonts:
-            font = QFont(self.family)
-            font.setPixelSize(max(1, round(PIXELS[size] * self.text_scale)))
-            font.setBold(bold)
+            font = font_of(self.family, size, bold=bold, text_scale=self.text_scale)
             self.fonts[size, bold] = font, QFontMetricsF(font)
         return self.fonts[size, bold]
+
+
+def font_of(family: str, size: Size, *, bold: bool = False, text_scale: float = 1.0) -> QFont:
+    """Return the font of a text role."""
+    font = QFont(family)
+    font.setPixelSize(max(1, round(PIXELS[size] * text_scale)))
+    font.setBold(bold)
+    return font

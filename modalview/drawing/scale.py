@@ -309,17 +309,19 @@ def _modes(frame: _Frame, modes: tuple[ScaleMode, ...]) -> tuple[Item, ...]:
 def _titles(frame: _Frame, content: ScaleContent, *, discs: bool) -> tuple[Item, ...]:
     """Write what the columns show, under them; rigid-body modes are at zero, below every axis."""
     size, text_scale = Size.SMALL, frame.text_scale
-    columns = [(frame.x(_DISCS[0]) - 20 * text_scale, ("Gershgorin", "bounds"))] if discs else []
-    columns.append((frame.x(_COUNT), ("modes", "inside")))
+    columns = [(frame.x(_COUNT), ("modes", "inside"))]
     if content.modes:
         columns.append((frame.x(sum(_MODE) / 2), ("found", "modes")))
     apart = 8.0 + text_width("inside", size, text_scale=text_scale)
     places = spread([x for x, _ in columns], apart, frame.left, frame.right + apart / 2)
-    items: list[Item] = []
-    for x, (_, lines) in zip(places, columns, strict=True):
-        for row, line in enumerate(lines):
-            y = frame.axis.bottom + (14.0 + 13.0 * row) * text_scale
-            items.append(Text(x, y, line, Role.MUTED, size, Anchor.MIDDLE))
+    titles = [(x, Anchor.MIDDLE, lines) for x, (_, lines) in zip(places, columns, strict=True)]
+    if discs:
+        titles.append((places[0] - apart / 2 - 4.0, Anchor.RIGHT, ("Gershgorin", "bounds")))
+    items: list[Item] = [
+        Text(x, frame.axis.bottom + (14.0 + 13.0 * row) * text_scale, line, Role.MUTED, size, anchor)
+        for x, anchor, lines in titles
+        for row, line in enumerate(lines)
+    ]
     if content.rigid_body_modes:
         number = content.rigid_body_modes
         text = f"and {number} rigid-body mode{'s' if number > 1 else ''} at 0 Hz"
