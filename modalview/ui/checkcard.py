@@ -10,6 +10,8 @@ from modalview.ui.theme import Theme
 from modalview.units.show import significant
 
 _TURN = 6.283185307179586  # rad of one turn
+# Separations that differ by less are shown as one: it is half of the last digit shown.
+_SAME_SHARE = 5e-4
 
 
 def excitation_text(band: Any) -> str:
@@ -39,27 +41,23 @@ def signed_percent(share: float) -> str:
     return f"{'+' if share > 0 else '−'}{size:.{1 if size < 9.95 else 0}f} %"
 
 
-def _counted(check: Any) -> str:
-    if check.inside is None or check.possible is None:
-        return "rounding leaves the count of modes in the band open"
-    now = "no mode" if check.inside == 0 else f"{check.inside} mode{'s' if check.inside > 1 else ''}"
-    if check.possible == check.inside:
-        return f"{now} in the band at any value within tolerance" if check.certain == check.inside else now
-    return f"{now} in the band now, up to {check.possible} within tolerance"
-
-
 def nearest_text(check: Any) -> str:
-    """Return the second line of a card: the nearest mode, or the counts before the solve."""
+    """Return how far the nearest mode is and whether it is driven; "" before the solve."""
     if check.nearest_mode is None or check.separation is None:
-        return _counted(check)
+        return ""
     words = f"mode {check.nearest_mode}: {signed_percent(check.separation)}"
     worst = check.worst_separation
-    if worst is not None and abs(worst - check.separation) > 5e-4:
+    if worst is not None and abs(worst - check.separation) > _SAME_SHARE:
         words += f", {signed_percent(worst)} at worst"
     drive = next((one for one in check.drives if one.mode == check.nearest_mode), None)
     if drive is not None and str(drive.drive) != "unknown":
         words += f"; {drive.drive}"
     return words
+
+
+def _kept_together(text: str) -> str:
+    """Keep numbers and their units on one line."""
+    return text.replace(" %", "\u00a0%").replace(" Hz", "\u00a0Hz")
 
 
 class CheckCard(QFrame):
@@ -74,10 +72,10 @@ class CheckCard(QFrame):
         self.frequency = QLabel(self)
         self.verdict = QLabel(self)
         self.verdict.setProperty("role", "verdict")
-        self.verdict.setAlignment(Qt.AlignmentFlag.AlignRight | Qt.AlignmentFlag.AlignVCenter)
+        self.frequency.setAlignment(Qt.AlignmentFlag.AlignRight | Qt.AlignmentFlag.AlignVCenter)
         self.nearest = QLabel(self)
         self.reason = QLabel(self)
-        for text in (self.verdict, self.nearest, self.reason):
+        for text in (self.label, self.verdict, self.nearest, self.reason):
             text.setWordWrap(True)
         for text in (self.nearest, self.reason):
             text.setProperty("role", "small")
@@ -85,13 +83,12 @@ class CheckCard(QFrame):
         layout.setContentsMargins(9, 6, 9, 6)
         layout.setHorizontalSpacing(7)
         layout.setVerticalSpacing(2)
-        layout.setColumnStretch(3, 1)
-        layout.addWidget(self.sign, 0, 0)
+        layout.setColumnStretch(1, 1)
+        layout.addWidget(self.sign, 0, 0, Qt.AlignmentFlag.AlignTop)
         layout.addWidget(self.label, 0, 1)
-        layout.addWidget(self.frequency, 0, 2)
-        layout.addWidget(self.verdict, 0, 3)
-        layout.addWidget(self.nearest, 1, 1, 1, 3)
-        layout.addWidget(self.reason, 2, 1, 1, 3)
+        layout.addWidget(self.frequency, 0, 2, Qt.AlignmentFlag.AlignTop)
+        for row, text in enumerate((self.verdict, self.nearest, self.reason), start=1):
+            layout.addWidget(text, row, 1, 1, 2)
 
     def show_check(self, check: Any, theme: Theme, *, current: bool) -> None:
         """Show a resonance.Check; ``current`` tells whether the nearest mode is of this model."""
@@ -102,12 +99,14 @@ class CheckCard(QFrame):
         self.verdict.setText(check.wording)
         self.verdict.setProperty("verdict", verdict)
         self.verdict.style().polish(self.verdict)
-        self.nearest.setText(nearest_text(check) if current else _counted(check))
-        self.reason.setText(check.reason)
-        self.reason.setVisible(verdict != "clear")
+        nearest = nearest_text(check) if current else ""
+        self.nearest.setText(_kept_together(nearest))
+        self.nearest.setVisible(bool(nearest))
+        self.reason.setText(_kept_together(check.reason))
+        self.reason.setVisible(not nearest or verdict != "clear")
         self.setToolTip(f"{check.band.check}: {check.reason}\n{_margin_text(check.band)}")
         self.setAccessibleName(f"{check.band.label}, {self.frequency.text()}: {check.wording}")
-        self.setAccessibleDescription(f"{self.nearest.text()}. {check.reason}")
+        self.setAccessibleDescription(f"{nearest}. {check.reason}".removeprefix(". "))
 
 
 def _margin_text(band: Any) -> str:

@@ -14,7 +14,10 @@ from modalview.ui.theme import LIGHT, Theme
 
 _GAP = 8.0
 _RADIUS = 6.0
+_SMALL = 0.88  # of the text size
 _BARS = 3
+# Least and greatest width of a card, in heights of a line.
+_WIDTHS = (15.2, 19.0)
 _LEFT = Qt.AlignmentFlag.AlignLeft | Qt.AlignmentFlag.AlignVCenter
 _RIGHT = Qt.AlignmentFlag.AlignRight | Qt.AlignmentFlag.AlignVCenter
 
@@ -26,7 +29,7 @@ class ModeCard(QStyledItemDelegate):
         super().__init__(parent)
         self._theme: Theme = LIGHT
         self._model: Model | None = None
-        self._height = 190
+        self._room, self._height = 0, 190
         self.factor = 1.0  # where the small pictures stand in their swing, -1..1
         self._small: Any = None
         self._small_size = (0, 0)
@@ -41,14 +44,15 @@ class ModeCard(QStyledItemDelegate):
         self._model, self._small = model, None
         self._posed = {}
 
-    def set_height(self, height: int) -> None:
-        """Make the cards as tall as the list."""
-        self._height = height
+    def set_room(self, width: int, height: int) -> None:
+        """Make the cards as tall as the list; few of them share its width."""
+        self._room, self._height = width, height
 
     def sizeHint(self, option: QStyleOptionViewItem, index: Any) -> QSize:  # noqa: N802  (Qt's name)
         """Return the size of a card; it follows the text size."""
         del index
-        return QSize(round(18.5 * option.fontMetrics.height()), self._height)
+        least, most = (round(times * option.fontMetrics.height()) for times in _WIDTHS)
+        return QSize(min(max(self._room, least), most), self._height)
 
     def paint(
         self, painter: QPainter, option: QStyleOptionViewItem, index: QModelIndex | QPersistentModelIndex
@@ -94,14 +98,16 @@ class ModeCard(QStyledItemDelegate):
         text = f"{mode.number}  {frequency_text(mode)}"
         self._write(painter, left, text, self._theme.in_band if band else self._theme.ink, font=bold)
         room = left.adjusted(metrics.horizontalAdvance(text) + 8, 0, 0, 0)
-        self._write(painter, room, range_text(mode), self._theme.quiet, align=_RIGHT)
+        small = QFont(painter.font())
+        small.setPointSizeF(_SMALL * small.pointSizeF())
+        self._write(painter, room, range_text(mode), self._theme.quiet, small, _RIGHT)
         self._write(painter, head.translated(0, line + 1), mode.name, self._theme.ink)
         return inner.top() + 2 * line + 4
 
     def _paint_shares(self, painter: QPainter, inner: QRectF, mode: Any) -> float:
         """Paint the three largest strain shares and the leading mass from the bottom; return their top."""
         small = QFont(painter.font())
-        small.setPointSizeF(0.88 * small.pointSizeF())
+        small.setPointSizeF(_SMALL * small.pointSizeF())
         line = QFontMetricsF(small).height()
         shares = mode.strain[:_BARS] if mode.kind == "elastic" else ()
         top = inner.bottom() - line * (1 + len(shares))
@@ -112,13 +118,13 @@ class ModeCard(QStyledItemDelegate):
         if mode.kinetic:
             lead = mode.kinetic[0]
             place = QRectF(inner.left(), inner.bottom() - line, inner.width(), line)
-            text = f"moving mass: {lead.label} {percent(lead.fraction)}"
+            text = f"mass: {lead.label} {percent(lead.fraction)}"
             self._write(painter, place, text, self._theme.quiet, font=small)
         return top - 2
 
     def _paint_bar(self, painter: QPainter, row: QRectF, share: Any, font: QFont) -> None:
         metrics = QFontMetricsF(font)
-        label = 0.46 * row.width()
+        label = 0.54 * row.width()
         figure = metrics.horizontalAdvance("100 %") + 4
         self._write(
             painter, QRectF(row.left(), row.top(), label, row.height()), share.label, self._theme.quiet, font

@@ -86,7 +86,8 @@ class ModeRow(QListView):
     def fit_cards(self) -> None:
         """Lay the cards out for the height and the text size of now."""
         bar = self.horizontalScrollBar().sizeHint().height()
-        self.card.set_height(max(self.height() - bar - 2, 60))
+        count = max(self.modes.rowCount(), 1)
+        self.card.set_room(self.viewport().width() // count, max(self.height() - bar - 14, 60))
         self.scheduleDelayedItemsLayout()
 
 
@@ -132,6 +133,7 @@ class Modes(QWidget):
         row = max(self.row.currentIndex().row(), 0)
         self.row.card.set_model(_model_of(solution))
         self.row.modes.show_solution(solution, current=True)
+        self.row.fit_cards()
         self.row.choose(min(row, len(solution.modes) - 1))
 
 
@@ -156,4 +158,4 @@ def evidence(analysis: Analysis) -> str:
         return ""
     if not analysis.solution_current:
         return "Out of date: these modes are of the model before the last edit"
-    return " · ".join(analysis.solution.evidence)
+    return " · ".join(analysis.solution.evidence[:2])

@@ -182,7 +182,9 @@ class PartTable(QTableView):
         self.lines.show_model(model, anew=anew)
         if anew:
             self.fit_columns()
+            quiet = self.blockSignals(True)  # choosing the first value is nobody's wish to see that part
             self.setCurrentIndex(self.lines.index(0, TYPED))
+            self.blockSignals(quiet)
             self.horizontalScrollBar().setValue(0)
 
     def fit_columns(self) -> None:

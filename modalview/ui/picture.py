@@ -58,12 +58,16 @@ def window_picture(file: Path | None, path: Path, look: Look) -> None:
     program = application()
     with tempfile.TemporaryDirectory() as folder:
         window = new_window(_settings(Path(folder), look))
+        failures: list[Exception] = []
+        window.analysis.failed.connect(failures.append)
         try:
             window.resize(look.width, look.height)
             window.show()
             if file is not None:
                 window.document.open(file, example=True)
-                _wait(program, lambda: _settled(window))
+                _wait(program, lambda: failures or _settled(window))
+                if failures:
+                    raise failures[0]
                 _arrange(window, look)
             _wait(program, lambda: True)
             if not window.grab().save(str(path)):

@@ -40,9 +40,16 @@ class PlayBar(QFrame):
         layout = QHBoxLayout(self)
         layout.setContentsMargins(8, 3, 14, 3)
         layout.setSpacing(8)
-        for widget in (self.pause, self.name, self.slider, amplitude):
+        # Where it stands its room is kept, so that the drawing does not jump when modes are found.
+        self.controls = (self.pause, self.name, self.slider, amplitude)
+        for widget in self.controls:
+            policy = widget.sizePolicy()
+            policy.setRetainSizeWhenHidden(True)
+            widget.setSizePolicy(policy)
             layout.addWidget(widget)
+        layout.addStretch(1)
         self._show_state()
+        self.show_mode(None, current=True)
 
     @property
     def moving(self) -> bool:
@@ -60,11 +67,11 @@ class PlayBar(QFrame):
 
     def show_mode(self, mode: Any, *, current: bool) -> None:
         """Name the mode that moves."""
-        self.setVisible(mode is not None)
+        for widget in self.controls:
+            widget.setVisible(mode is not None)
         if mode is not None:
             old = "" if current else " (out of date)"
             self.name.setText(f"mode {mode.number} · {frequency_text(mode)}{old}")
-            self.adjustSize()
 
     def _on_toggled(self, paused: bool) -> None:  # noqa: FBT001  (a slot)
         self._show_state()

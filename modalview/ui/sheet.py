@@ -23,7 +23,6 @@ class Sheet(QWidget):
     """Paints cached pictures of the model; a frame of the moving mode only adds what moves."""
 
     part_chosen = Signal(str)
-    resized = Signal()
 
     def __init__(self, parent: QWidget | None = None) -> None:
         super().__init__(parent)
@@ -179,7 +178,6 @@ class Sheet(QWidget):
         super().resizeEvent(event)
         if self._model is not None:
             self._rebuild()
-        self.resized.emit()
 
     def showEvent(self, event: Any) -> None:  # noqa: N802  (Qt's name)
         """Move again."""

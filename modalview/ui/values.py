@@ -111,7 +111,7 @@ def _row(model: Model, field: EditableField, part: str, part_id: str) -> ValueRo
         address=field.address,
         part=part,
         part_id=part_id,
-        what=field.name,
+        what="tolerance of the part" if field.name == "tolerance" else field.name,
         text=field.text,
         converted=converted(si, field.quantity) if known else "",
         tolerance_address=field.tolerance_address,

@@ -72,8 +72,7 @@ class Window(QMainWindow):
         self.setAcceptDrops(True)
         self.banner = Banner(self)
         self.sheet = Sheet(self)
-        self.play_bar = PlayBar(self.sheet)
-        self.play_bar.hide()
+        self.play_bar = PlayBar(self)
         self.scale = ScalePanel(self)
         self.results = Results(self.document, self.analysis, self)
         self.modes = Modes(self)
@@ -93,7 +92,7 @@ class Window(QMainWindow):
 
     def _places(self) -> QSplitter:
         left = QSplitter(Qt.Orientation.Vertical, self)
-        left.addWidget(self.sheet)
+        left.addWidget(self._drawing())
         left.addWidget(self._tabs())
         left.setStretchFactor(0, 1)
         left.setSizes([440, 236])
@@ -103,9 +102,19 @@ class Window(QMainWindow):
             places.addWidget(widget)
         places.setStretchFactor(0, 3)
         places.setStretchFactor(1, 1)
-        places.setSizes([686, 294, 300])
+        places.setSizes([660, 326, 294])
         places.setChildrenCollapsible(False)
         return places
+
+    def _drawing(self) -> QWidget:
+        above = QWidget(self)
+        above.setObjectName("drawing")
+        layout = QVBoxLayout(above)
+        layout.setContentsMargins(0, 0, 0, 4)
+        layout.setSpacing(0)
+        layout.addWidget(self.sheet, 1)
+        layout.addWidget(self.play_bar)
+        return above
 
     def _tabs(self) -> QWidget:
         below = QWidget(self)
@@ -139,14 +148,13 @@ class Window(QMainWindow):
         self.document.saved.connect(self.on_saved)
         self.analysis.outlook_changed.connect(self.show_known)
         self.analysis.solution_changed.connect(self.show_modes)
-        self.analysis.busy_changed.connect(lambda: self.banner.show_busy(self.analysis))
+        self.analysis.busy_changed.connect(self.show_busy)
         self.analysis.failed.connect(self.on_failed)
         self.banner.find_asked.connect(self.on_find)
         self.banner.cancel_asked.connect(self.analysis.cancel)
         self.modes.mode_chosen.connect(self.on_mode_chosen)
         self.parts.part_chosen.connect(self.sheet.select)
         self.sheet.part_chosen.connect(self.on_part_chosen)
-        self.sheet.resized.connect(self._place_play_bar)
         self.play_bar.moving_changed.connect(self.on_move)
         self.play_bar.amplitude_changed.connect(self.on_amplitude)
         self.welcome.open_asked.connect(self.on_open)
@@ -256,6 +264,7 @@ class Window(QMainWindow):
         if outlook is not None:
             self._show_title(str(outlook.verdict or "nothing to check"), outlook.assembly.pencil().n)
         self.banner.show_analysis(self.analysis)
+        self.modes.show_analysis(self.analysis)
         self.results.show_results()
         self.status.show_state(self.document, self.analysis)
 
@@ -263,6 +272,7 @@ class Window(QMainWindow):
         """Show the modes found, and mark those of an older model."""
         self.modes.show_analysis(self.analysis)
         self.proof.setText(evidence(self.analysis))
+        self.proof.setToolTip("\n".join(self.analysis.solution.evidence) if self.analysis.solution else "")
         self._show_play_bar()
         if not self.analysis.looking:
             self.show_known()
@@ -274,11 +284,10 @@ class Window(QMainWindow):
 
     def _show_play_bar(self) -> None:
         self.play_bar.show_mode(self.modes.row.chosen(), current=self.analysis.solution_current)
-        self._place_play_bar()
 
-    def _place_play_bar(self) -> None:
-        self.play_bar.adjustSize()
-        self.play_bar.move(12, self.sheet.height() - self.play_bar.height() - 10)
+    def show_busy(self) -> None:
+        """Show progress while modes are being found."""
+        self.banner.show_busy(self.analysis)
 
     def on_failed(self, error: Exception) -> None:
         """Tell of an error the program made while studying, and go on."""

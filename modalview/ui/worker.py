@@ -14,6 +14,7 @@ from PySide6.QtCore import QObject, QThread, Signal, Slot
 from modalview.errors import CancelledError, KeepclearError
 from modalview.model.parts import Model
 from modalview.ui.apart import LARGE_MODEL, solve_apart
+from modalview.ui.studydoor import Study, load_study
 
 # Models of at most so many coordinates find their modes after each edit, unless switched off: below, all
 # modes take a few hundredths of a second.
@@ -57,23 +58,6 @@ class Answer:
     number: int
     step: Step
     content: Any = None
-
-
-@dataclass(frozen=True, slots=True)
-class Study:
-    """The doors of the core, as `modalview.study` has them."""
-
-    request: Callable[..., Any]
-    look: Callable[[Any, Any], Any]
-    solve: Callable[[Any, Any], Any]
-
-
-def load_study() -> Study:
-    """Import the study; takes some tenths of a second the first time."""
-    from modalview.study import look, solve  # noqa: PLC0415  (numpy and scipy come after the first paint)
-    from modalview.study.results import Request  # noqa: PLC0415
-
-    return Study(Request, look, solve)
 
 
 class _Desk(QObject):

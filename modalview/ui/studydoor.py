@@ -1,0 +1,45 @@
+"""The doors of the core, imported when first needed."""
+
+from collections.abc import Callable
+from dataclasses import dataclass
+from functools import cache
+from typing import Any
+
+from modalview.model.parts import Body, End, Model, Spring, Support
+from modalview.model.values import Entry, Value
+from modalview.units.quantities import LENGTH, MASS, STIFFNESS
+
+
+@dataclass(frozen=True, slots=True)
+class Study:
+    """What of `modalview.study` the worker calls: Request, look(request, previous) and solve(request, outlook)."""
+
+    request: Callable[..., Any]
+    look: Callable[[Any, Any], Any]
+    solve: Callable[[Any, Any], Any]
+
+
+@cache
+def load_study() -> Study:
+    """Import the study; takes some tenths of a second the first time."""
+    from modalview.study import look, solve  # noqa: PLC0415  (numpy and scipy come after the first paint)
+    from modalview.study.results import Request  # noqa: PLC0415
+
+    # What loads itself on first use is loaded now, while nobody waits.
+    solve(Request(_smallest()))
+    return Study(Request, look, solve)
+
+
+def _smallest() -> Model:
+    def point(text: str) -> tuple[Entry, Entry]:
+        return Entry.typed("0 m", LENGTH), Entry.typed(text, LENGTH)
+
+    return Model(
+        bodies=(Body(id="m", mass=Value.typed("1 kg", MASS), position=point("1 m")),),
+        supports=(Support(id="g", position=point("0 m")),),
+        links=(
+            Spring(
+                id="k", from_=End(body="m"), to=End(support="g"), stiffness=Value.typed("1 N/m", STIFFNESS)
+            ),
+        ),
+    )
