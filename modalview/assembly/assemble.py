@@ -13,13 +13,14 @@ from modalview.assembly.coordinates import Coordinates, independent_coordinates
 from modalview.assembly.kinematics import places
 from modalview.assembly.masses import principal_terms
 from modalview.assembly.parameters import Case, Parameter, values_at
-from modalview.assembly.pencil import Coordinate, Pencil
+from modalview.assembly.pencil import Coordinate, Pencil, Reused
 from modalview.assembly.perpart import PerPart, per_part
 from modalview.assembly.quadratic import QuadraticForm
 from modalview.assembly.rigid import rigid_body_motions
 from modalview.assembly.scales import coordinate_scales
 from modalview.assembly.soundness import require_links
 from modalview.assembly.stretch import Stretch, stretches
+from modalview.factor.pattern import union_pattern
 from modalview.model.parts import FREEDOMS, Body, InertiaTensor, Link, Model, Motion
 
 Array = npt.NDArray[np.float64]
@@ -76,6 +77,13 @@ class Structure:
     mass: TermSet
     damping: TermSet
     rigid_body: Array
+
+    @cached_property
+    def reused(self) -> Reused:
+        """What all pencils of this structure share."""
+        ones = [np.ones(len(terms.part)) for terms in (self.stiffness, self.mass)]
+        pattern = union_pattern(self.stiffness.form.matrix(ones[0]), self.mass.form.matrix(ones[1]))
+        return Reused(pattern, QuadraticForm(sp.csr_array(abs(self.stiffness.rows))))
 
 
 @dataclass(frozen=True, eq=False)
@@ -148,6 +156,7 @@ class Assembly:
             stiffness=stiffness,
             C=structure.damping.form.matrix(structure.damping.values(at)),
             coordinates=structure.labels,
+            reused=structure.reused,
         )
 
     def body_motion(self, shapes: Array) -> Array:
@@ -257,8 +266,12 @@ def _mass_terms(model: Model, coordinates: Coordinates, index: Mapping[str, int]
         (body.id, name): i
         for i, (body, name) in enumerate((b, f) for b in model.bodies for f in FREEDOMS[model.motion])
     }
+    rows = _rows([form for _, _, _, form in terms], columns) @ coordinates.to_bodies
+    # Where principal axes are rounded, a direction known to be massless would keep a rest of 1e-17.
+    rows = sp.csr_array(rows @ sp.diags_array((~coordinates.massless).astype(float)))
+    rows.eliminate_zeros()
     return TermSet(
-        rows=sp.csr_array(_rows([form for _, _, _, form in terms], columns) @ coordinates.to_bodies),
+        rows=rows,
         support_rows=sp.csr_array((len(terms), 0)),
         support_freedoms=(),
         factor=np.array([factor for _, _, factor, _ in terms], dtype=float),

@@ -31,6 +31,8 @@ def mass_root_inverse(mass: sp.csc_array, massy: npt.NDArray[np.bool_]) -> sp.cs
         A block is not positive definite.
     """
     n = mass.shape[0]
+    if mass.nnz == n and massy.all():
+        return _diagonal_root_inverse(mass.diagonal())
     column = np.cumsum(massy) - 1
     _, label = connected_components(mass, directed=False)
     order = np.argsort(label, kind="stable")
@@ -38,9 +40,7 @@ def mass_root_inverse(mass: sp.csc_array, massy: npt.NDArray[np.bool_]) -> sp.cs
     size = np.diff(starts)
     single = massy & (size[label] == 1)
     diagonal = mass.diagonal()
-    if np.any(diagonal[single] <= 0):
-        bad = int(np.flatnonzero(single & (diagonal <= 0))[0])
-        raise NumericalError(f"Mass {diagonal[bad]:g} of coordinate {bad} is not positive.")
+    _require_positive(diagonal, single)
     rows, cols = [np.flatnonzero(single)], [column[single]]
     entries = [1 / np.sqrt(diagonal[single])]
     for block in np.flatnonzero(size > 1):
@@ -55,6 +55,19 @@ def mass_root_inverse(mass: sp.csc_array, massy: npt.NDArray[np.bool_]) -> sp.cs
         entries.append(inverse_root[i, j])
     data = (np.concatenate(entries), (np.concatenate(rows), np.concatenate(cols)))
     return sp.csc_array(data, shape=(n, int(massy.sum())))
+
+
+def _diagonal_root_inverse(diagonal: npt.NDArray[np.float64]) -> sp.csc_array:
+    n = diagonal.size
+    _require_positive(diagonal, np.ones(n, dtype=bool))
+    places = np.arange(n + 1, dtype=np.int32)
+    return sp.csc_array((1 / np.sqrt(diagonal), places[:n], places), shape=(n, n))
+
+
+def _require_positive(diagonal: npt.NDArray[np.float64], where: npt.NDArray[np.bool_]) -> None:
+    if np.any(diagonal[where] <= 0):
+        bad = int(np.flatnonzero(where & (diagonal <= 0))[0])
+        raise NumericalError(f"Mass {diagonal[bad]:g} of coordinate {bad} is not positive.")
 
 
 def _root_inverse(block: npt.NDArray[np.float64]) -> npt.NDArray[np.float64]:

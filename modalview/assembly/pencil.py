@@ -10,7 +10,9 @@ import scipy.sparse as sp
 
 from modalview.assembly.condense import massless_recovery
 from modalview.assembly.massroot import mass_root_inverse
+from modalview.assembly.quadratic import QuadraticForm
 from modalview.errors import NumericalError
+from modalview.factor.pattern import Pattern
 from modalview.factor.shifted import PencilParts, ShiftedPencil, shifted_pencil
 
 Array = npt.NDArray[np.float64]
@@ -33,6 +35,22 @@ class Coordinate:
     part: str
     freedom: str
     cluster: int
+
+
+@dataclass(frozen=True, eq=False)
+class Reused:
+    """What does not depend on values: shared by all pencils of one structure.
+
+    Parameters
+    ----------
+    pattern : Pattern
+        Order and pattern of K - sigma M.
+    absolute : QuadraticForm
+        Of the absolute values of the rows.
+    """
+
+    pattern: Pattern
+    absolute: QuadraticForm
 
 
 @dataclass(frozen=True, eq=False)
@@ -59,6 +77,8 @@ class Pencil:
         Viscous damping, N s/m; zero without dashpots.
     coordinates : sequence of Coordinate
         What each coordinate is.
+    reused : Reused or None
+        What all pencils of one structure share.
     """
 
     K: sp.csc_array
@@ -70,6 +90,7 @@ class Pencil:
     stiffness: Array | None = None
     C: sp.csc_array | None = None
     coordinates: Sequence[Coordinate] = field(default=())
+    reused: Reused | None = None
 
     @property
     def n(self) -> int:
@@ -114,16 +135,14 @@ class Pencil:
         """
         if self.rows is None or self.stiffness is None:
             return sp.csc_array(abs(self.K))
+        if self.reused is not None:
+            return self.reused.absolute.matrix(np.abs(self.stiffness))
         absolute = abs(self.rows)
         return sp.csc_array(absolute.T @ sp.diags_array(np.abs(self.stiffness)) @ absolute)
 
     @cached_property
     def shifted(self) -> ShiftedPencil:
         """K - sigma M for counts and solves at many shifts."""
-        return self.shifted_like(None)
-
-    def shifted_like(self, other: ShiftedPencil | None) -> ShiftedPencil:
-        """Return ``shifted``, with the order and pattern of a pencil of equal structure used again."""
         terms, definite = 0, False
         if self.rows is not None and self.stiffness is not None:
             terms = int(np.bincount(self.rows.indices, minlength=1).max())
@@ -138,7 +157,7 @@ class Pencil:
             rigid_modes=self.rigid_body.shape[1],
             definite=definite,
         )
-        return shifted_pencil(parts, other)
+        return shifted_pencil(parts, self.reused.pattern if self.reused else None)
 
 
 def pencil_of_terms(

@@ -72,6 +72,22 @@ class BandCount:
     evidence: tuple[EdgeCount, ...]
 
     @property
+    def below(self) -> int | None:
+        """Modes below the band at nominal values; never more than there are."""
+        return self._nominal("below")
+
+    @property
+    def upto(self) -> int | None:
+        """Modes up to its upper end at nominal values; never fewer than there are."""
+        return self._nominal("at most")
+
+    def _nominal(self, side: str) -> int | None:
+        # Where no mode is possible, N_stiff(lo) <= N(lo) <= N(hi) <= N_soft(hi) are all one number.
+        same = [e.count.number for e in self.evidence if e.side == side]
+        own = [e.count.number for e in self.evidence if e.side == side and e.case == "nominal"]
+        return (own or same)[0]
+
+    @property
     def undecided(self) -> tuple[str, ...]:
         """The counts that rounding left open, in words."""
         return tuple(

@@ -11,7 +11,7 @@ from modalview.errors import NumericalError
 from modalview.factor.dense import dense_inertia
 from modalview.factor.held import held_margin
 from modalview.factor.pattern import Factors, Pattern, union_pattern
-from modalview.factor.rounding import SLACK, gamma
+from modalview.factor.rounding import SLACK, UNIT, gamma
 
 if TYPE_CHECKING:
     from scipy.sparse.linalg import SuperLU
@@ -120,14 +120,17 @@ class ShiftedPencil:
 
         Notes
         -----
-        With P B P^T ~ L U computed without interchanges and D = diag(U), the number of negative u_ii is
-        the exact number of negative eigenvalues of the symmetric matrix L D L^T (Sylvester). Its distance
-        from the true K - sigma M, entry by entry, is at most F, the sum of
+        P (K - sigma M) P^T + E = L U was computed without interchanges, U = D V^T with D = diag(U) and unit
+        triangular L, V. Rounding leaves V not quite L. Let H = (L + V)/2 and R = (V - L)/2: then L D V^T =
+        H D H^T - R D R^T + (H D R^T - R D H^T), whose last part is antisymmetric, so that the symmetric
+        matrix counted, H D H^T, lies from P (K - sigma M) P^T only by R D R^T and the symmetric part of E.
+        The number of negative u_ii is exactly its number of negative eigenvalues (Sylvester). Entry by
+        entry its distance from the true K - sigma M is at most F, the sum of
 
-        - gamma_(s+5) |L||U|: the factorization (Higham, theorem 9.3: gamma_k for inner products of k
-          terms in any order; s, the entries in the row of L that mirrors the column of U, makes k <= s, one
-          more for the multiplication by the reciprocal of the pivot) and the evaluation of the next line;
-        - |L| |U - D L^T|, evaluated: rounding leaves U not quite D L^T;
+        - gamma_(s+3) |L||U|, from the factorization (Higham, theorem 9.3: gamma_k for inner products of k
+          terms in any order; s, the entries in the row of L or column of U, makes k <= s, one more for
+          the multiplication by the reciprocal of the pivot);
+        - |R||D||R|^T, measured;
         - gamma_2 (|K| + |sigma M|): the product sigma m and its subtraction;
         - gamma_(t+2) |A|^T k |A|: the sum of at most t terms k_i a_i a_i^T in one entry of K.
 
@@ -243,23 +246,21 @@ class PencilParts:
     definite: bool = False
 
 
-def shifted_pencil(parts: PencilParts, like: ShiftedPencil | None = None) -> ShiftedPencil:
+def shifted_pencil(parts: PencilParts, pattern: Pattern | None = None) -> ShiftedPencil:
     """Prepare K - sigma M for counts and solves at many shifts.
 
     Parameters
     ----------
     parts : PencilParts
-    like : ShiftedPencil or None
-        One of equal structure (other values of the same model), whose pattern is then used again.
+    pattern : Pattern or None
+        Of the union of K and M, where it is there from other values of the same model.
 
     Notes
     -----
-    Cost: two sparse factorizations, or a check of the pattern with ``like``.
+    Cost: two sparse factorizations without a pattern.
     """
     K, M = parts.K, parts.M
-    if like is not None and like.pattern.holds(K) and like.pattern.holds(M):
-        pattern = like.pattern
-    else:
+    if pattern is None:
         pattern = union_pattern(K, M)
     return ShiftedPencil(
         pattern=pattern,
@@ -296,20 +297,31 @@ def _mirrored(
     shape: Factors, terms: Indices, lu: "SuperLU[np.float64]", vector: Array
 ) -> tuple[Array, Array]:
     """Pivots and the rounding of the factorization times ``vector``, when U mirrors L entry by entry."""
-    lower, upper = lu.L.data, lu.U.data[shape.mirror]
+    upper = lu.U.data[shape.mirror]
     pivots = upper[shape.diagonal]
-    weights = np.abs(upper - pivots[shape.columns] * lower) * vector[shape.lower_indices]
-    weights += np.abs(upper) * (gamma(terms + 5) * vector)[shape.lower_indices]
-    gathered = np.add.reduceat(weights, shape.lower_indptr[:-1])
-    rounding = np.bincount(shape.lower_indices, np.abs(lower) * gathered[shape.columns], vector.size)
-    return pivots, rounding.astype(float, copy=False)
+    apart, size = _apart_and_size(upper, pivots[shape.columns] * lu.L.data)
+    starts = shape.lower_indptr[:-1]
+    grown = np.add.reduceat(size * (gamma(terms + 3) * vector)[shape.lower_indices], starts)
+    skew = np.add.reduceat(apart * vector[shape.lower_indices], starts)
+    inverse = 1 / np.abs(pivots)
+    entries = size * (grown * inverse)[shape.columns] + apart * (0.25 * skew * inverse)[shape.columns]
+    return pivots, np.bincount(shape.lower_indices, entries, vector.size).astype(float, copy=False)
 
 
 def _unmirrored(terms: Indices, lu: "SuperLU[np.float64]", vector: Array) -> tuple[Array, Array]:
     """Do the same by sparse products, when some entry cancelled to an exact zero."""
-    lower, upper = lu.L, lu.U
-    pivots = upper.diagonal()
-    apart = abs(upper - sp.diags_array(pivots) @ lower.T)
-    size = abs(lower)
-    rounding = size @ (abs(upper) @ (gamma(terms + 5) * vector) + apart @ vector)
-    return np.asarray(pivots, dtype=float), np.asarray(rounding, dtype=float)
+    upper = sp.csr_array(lu.U)
+    pivots: Array = np.asarray(upper.diagonal(), dtype=float)
+    mirror = sp.csr_array(sp.diags_array(pivots) @ lu.L.T)
+    apart = abs(upper - mirror) + 2 * UNIT * abs(mirror)
+    size = abs(upper) + apart
+    inverse = 1 / np.abs(pivots)
+    rounding = size.T @ (inverse * (size @ (gamma(terms + 3) * vector)))
+    rounding += apart.T @ (0.25 * inverse * (apart @ vector))
+    return pivots, np.asarray(rounding, dtype=float)
+
+
+def _apart_and_size(upper: Array, mirror: Array) -> tuple[Array, Array]:
+    """At least |U - D L^T| = 2 |D R^T|, its evaluation included, and at least |U| and |D L^T|."""
+    apart = np.abs(upper - mirror) + 2 * UNIT * np.abs(mirror)
+    return apart, np.abs(upper) + apart

@@ -87,6 +87,8 @@ class Check:
         One sentence: which count, which case, which mode.
     inside, possible, certain : int or None
         Modes in the band now, at some values within tolerance, at every value; None is undecided.
+    below, upto : int or None
+        Modes of the whole model below the band and up to its upper edge, at nominal values.
     deciding_case : str or None
         "soft-heavy" or "stiff-light", whichever reaches the band.
     undecided : tuple of str
@@ -107,6 +109,8 @@ class Check:
     inside: int | None
     possible: int | None
     certain: int | None
+    below: int | None
+    upto: int | None
     deciding_case: str | None
     undecided: tuple[str, ...] = ()
     nearest_mode: int | None = None

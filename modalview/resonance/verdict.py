@@ -57,8 +57,8 @@ def judge(band: Band, cases: Cases, exactness: Exactness) -> Check:
 
 
 def _clear(band: Band, count: BandCount, cases: Cases, exactness: Exactness) -> Check:
-    below = next(edge.count.number for edge in count.evidence if edge.side == "below")
-    above_all = below == cases.nominal.modes
+    # No mode is possible inside, so that as many lie below the band at every value within tolerance.
+    above_all = count.below == cases.nominal.modes
     wording = ("clear in this model" if above_all else "clear") + exactness.words
     if above_all:
         reason = f"{band_text(band)} lies above every mode of this model; local modes are not modelled"
@@ -120,6 +120,8 @@ def _check(
         inside=count.inside,
         possible=count.possible,
         certain=count.certain,
+        below=count.below,
+        upto=count.upto,
         deciding_case=deciding,
         undecided=count.undecided,
     )

@@ -4,7 +4,6 @@ import math
 from collections.abc import Sequence
 
 from modalview.assembly.pencil import Pencil
-from modalview.factor.counts import count_at_most, count_below
 from modalview.resonance.results import Check
 from modalview.study.results import Interval
 
@@ -15,20 +14,27 @@ def scale_intervals(pencil: Pencil, checks: Sequence[Check]) -> tuple[Interval, 
     """Return the number of modes in every band and in every gap, ascending by frequency.
 
     Rigid-body modes are left out. Bands that overlap keep a count each; gaps are what no band covers.
+    Nothing is counted anew: the checks know the modes below and up to their bands.
     """
-    shifted = pencil.shifted
-    spans = sorted((check.band.nominal, check.band.check, check.inside) for check in checks)
+    ranked = sorted(checks, key=lambda check: check.band.nominal)
     found = [
-        Interval(low / RAD_PER_HZ, high / RAD_PER_HZ, number, name) for (low, high), name, number in spans
+        Interval(
+            check.band.nominal[0] / RAD_PER_HZ,
+            check.band.nominal[1] / RAD_PER_HZ,
+            check.inside,
+            check.band.check,
+        )
+        for check in ranked
     ]
-    reached, below = 0.0, int(pencil.rigid_body.shape[1])
-    seen: int | None = below
-    for (low, high), _, _ in spans:
+    reached: float = 0.0
+    seen: int | None = int(pencil.rigid_body.shape[1])
+    for check in ranked:
+        low, high = check.band.nominal
         if low > reached:
-            count = count_below(shifted, low**2).number
-            found.append(Interval(reached / RAD_PER_HZ, low / RAD_PER_HZ, _difference(count, seen)))
+            number = _difference(check.below, seen)
+            found.append(Interval(reached / RAD_PER_HZ, low / RAD_PER_HZ, number))
         if high > reached:
-            reached, seen = high, count_at_most(shifted, high**2).number
+            reached, seen = high, check.upto
     found.append(Interval(reached / RAD_PER_HZ, math.inf, _difference(pencil.modes, seen)))
     return tuple(sorted(found, key=lambda interval: (interval.low_hz, interval.high_hz)))
 

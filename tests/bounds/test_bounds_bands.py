@@ -23,8 +23,8 @@ def tolerance_cases():
     nominal = pencil().shifted
     return Cases(
         nominal=nominal,
-        soft_heavy=pencil(0.9, 1.05).shifted_like(nominal),
-        stiff_light=pencil(1.1, 0.95).shifted_like(nominal),
+        soft_heavy=pencil(0.9, 1.05).shifted,
+        stiff_light=pencil(1.1, 0.95).shifted,
     )
 
 
@@ -84,7 +84,7 @@ def test_a_mode_on_the_very_edge_is_inside():
 
 def test_a_mode_on_the_edge_over_tolerance_is_not_called_certain():
     nominal = pencil_of_terms(sp.csr_array(np.eye(1)), np.array([9.0]), np.array([1.0])).shifted
-    stiff = pencil_of_terms(sp.csr_array(np.eye(1)), np.array([16.0]), np.array([1.0])).shifted_like(nominal)
+    stiff = pencil_of_terms(sp.csr_array(np.eye(1)), np.array([16.0]), np.array([1.0])).shifted
     counted = count_band(Cases(nominal, nominal, stiff), (2.0, 4.0))
     assert (counted.inside, counted.possible, counted.certain) == (1, 1, 0)
 
