@@ -295,15 +295,29 @@ def _modes(frame: _Frame, modes: tuple[ScaleMode, ...]) -> tuple[Item, ...]:
     shown = sorted((m for m in modes if axis.low_hz <= m.hz <= axis.high_hz), key=lambda mode: -mode.hz)
     left, right = frame.x(_MODE[0]), frame.x(_MODE[1])
     items: list[Item] = []
-    wanted = [axis.y_of(mode.hz) for mode in shown]
-    placed = spread(wanted, 13.0 * frame.text_scale, axis.top, axis.bottom)
-    for mode, y, text_y in zip(shown, wanted, placed, strict=True):
-        role = Role.ACCENT if mode.verdict is None else _RANGE_ROLE.get(mode.verdict, Role.ACCENT)
+    for mode in shown:
+        y = axis.y_of(mode.hz)
+        role = _mode_role(mode)
         top, bottom = axis.y_of(mode.high), axis.y_of(mode.low)
         items.append(Box(left, top, right - left, max(bottom - top, 1.0), 2.0, None, role, 0.0, 0.2))
         items.append(Lines(np.array([[left, y, right, y]]), role, 2.4))
-        items.append(Text(right + 5, text_y, str(mode.number), role, Size.SMALL, Anchor.LEFT, bold=True))
-    return tuple(items)
+    return tuple(items) + _numbers(frame, shown, right + 5)
+
+
+def _numbers(frame: _Frame, shown: list[ScaleMode], x: float) -> tuple[Item, ...]:
+    """Write the modes' numbers beside their ticks; of too many, every second, third, ..."""
+    axis, apart = frame.axis, 14.5 * frame.text_scale
+    every = max(1, int(np.ceil(len(shown) * apart / (axis.bottom - axis.top))))
+    written = shown[::every]
+    places = spread([axis.y_of(mode.hz) for mode in written], apart, axis.top, axis.bottom)
+    return tuple(
+        Text(x, y, str(mode.number), _mode_role(mode), Size.SMALL, Anchor.LEFT, bold=True)
+        for mode, y in zip(written, places, strict=True)
+    )
+
+
+def _mode_role(mode: ScaleMode) -> Role:
+    return Role.ACCENT if mode.verdict is None else _RANGE_ROLE.get(mode.verdict, Role.ACCENT)
 
 
 def _titles(frame: _Frame, content: ScaleContent, *, discs: bool) -> tuple[Item, ...]:
@@ -318,12 +332,13 @@ def _titles(frame: _Frame, content: ScaleContent, *, discs: bool) -> tuple[Item,
     if discs:
         titles.append((places[0] - apart / 2 - 4.0, Anchor.RIGHT, ("Gershgorin", "bounds")))
     items: list[Item] = [
-        Text(x, frame.axis.bottom + (14.0 + 13.0 * row) * text_scale, line, Role.MUTED, size, anchor)
+        Text(x, frame.axis.bottom + (13.0 + 14.5 * row) * text_scale, line, Role.MUTED, size, anchor)
         for x, anchor, lines in titles
         for row, line in enumerate(lines)
     ]
     if content.rigid_body_modes:
         number = content.rigid_body_modes
         text = f"and {number} rigid-body mode{'s' if number > 1 else ''} at 0 Hz"
-        items.append(Text(frame.left, frame.axis.bottom + 44.0 * text_scale, text, Role.MUTED, size))
+        text = shortened(text, frame.board.sheet[0] - 12, size, text_scale)
+        items.append(Text(6.0, frame.axis.bottom + 46.0 * text_scale, text, Role.MUTED, size))
     return tuple(items)

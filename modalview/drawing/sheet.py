@@ -42,7 +42,7 @@ def sheet_geometry(
         None fits the model; else what ``geometry.view.panned`` or ``zoomed`` gave.
     """
     side = min(SIDE * text_scale, 0.2 * width)
-    top = title_size(model.title, width, text_scale)[1] + (57.0 + 17.0 * lines_above(model)) * text_scale
+    top = title_size(model.title, width, text_scale)[1] + (66.0 + 17.0 * lines_above(model)) * text_scale
     area = (side, top, max(width - 2 * side, 40.0), max(height - top - BOTTOM, 40.0))
     return lettered(bare_geometry(model, (width, height), area, view, 1.0, text_scale))
 

@@ -1,3 +1,5 @@
+from itertools import pairwise
+
 import numpy as np
 import pytest
 from hypothesis import given, settings
@@ -10,7 +12,6 @@ from modalview.drawing.scale import axis_range, scale_drawing
 from modalview.drawing.scalecontent import ScaleBand, ScaleContent, ScaleCount, ScaleMode, scale_content
 from modalview.model.parts import Model
 from modalview.resonance.results import Verdict
-from modalview.study.look import look
 from modalview.study.results import Request
 from modalview.study.solve import solve
 
@@ -73,14 +74,14 @@ def test_axis_rises_and_keeps_what_is_beyond_at_its_ends():
 def test_ticks_stay_apart(low: float, ratio: float, apart: float):
     axis = Axis(low, low * ratio, 30.0, 700.0)
     places = [axis.y_of(hz) for hz in axis.ticks(apart)]
-    assert all(one - other >= apart for one, other in zip(places, places[1:], strict=False))
+    assert all(one - other >= apart for one, other in pairwise(places))
 
 
 @settings(derandomize=True, max_examples=50)
 @given(st.lists(st.floats(0, 500), min_size=1, max_size=20))
 def test_spread_keeps_order_and_distance(wanted: list[float]):
     placed = spread(sorted(wanted), 20.0, 0.0, 500.0)
-    assert all(other - one >= 20.0 - 1e-6 for one, other in zip(placed, placed[1:], strict=False))
+    assert all(other - one >= 20.0 - 1e-6 for one, other in pairwise(placed))
     assert min(placed) >= -1e-6
     assert max(placed) <= 500.0 + 1e-6
 
@@ -134,6 +135,16 @@ def test_orders_far_from_the_modes_are_marked_at_the_edge():
     assert marks["0.01× 0.1 Hz"] > scale.axis.bottom - 30
 
 
+def test_too_many_modes_are_numbered_in_part():
+    modes = tuple(ScaleMode(n, 10 * 1.02**n, 10 * 1.02**n, 10 * 1.02**n) for n in range(1, 200))
+    items = scale_drawing(
+        ScaleContent(lowest=(10, 10), highest=(524, 525), modes=modes), 320, 500
+    ).drawing.items
+    assert_apart(items, (320, 500))
+    ticks = [item for item in items if isinstance(item, Lines) and item.role is Role.ACCENT]
+    assert len(ticks) == 199
+
+
 def test_discs_fold_away():
     shown, folded = (
         sum(
@@ -166,7 +177,7 @@ def test_very_stiff_bounds_do_not_crush_the_bands():
 
 
 def test_content_of_a_studied_model_fits_the_scale(demo_model: Model):
-    solution = solve(look(Request(demo_model)))
+    solution = solve(Request(demo_model))
     content = scale_content(solution.outlook, solution)
     assert len(content.bands) == len(solution.checks)
     assert len(content.modes) == sum(mode.kind == "elastic" for mode in solution.modes)

@@ -128,7 +128,7 @@ def test_the_selected_part_is_framed(tower_model: Model):
 def test_a_moved_view_moves_every_point(plane_model: Model):
     geometry = sheet_geometry(plane_model, 720, 540)
     moved = sheet_geometry(plane_model, 720, 540, view=geometry.view.panned(30, -20))
-    assert np.allclose(moved.boxes, geometry.boxes + [30, -20, 30, -20])
+    assert np.allclose(moved.boxes, geometry.boxes + np.array([30, -20, 30, -20]))
 
 
 def test_zooming_keeps_the_point_under_the_pointer(plane_model: Model):
