@@ -121,9 +121,21 @@ class Assembly:
         return any(not p.exact for p in self.parameters if p.family != "damping")
 
     @property
-    def taken_as_exact(self) -> int:
-        """Number of values that matter to the modes and carry no tolerance."""
-        return sum(p.exact for p in self.parameters if p.family != "damping")
+    def exact_values(self) -> tuple[Parameter, ...]:
+        """Values that matter to the modes and carry no tolerance.
+
+        A dynamic ratio without one is covered by that of the stiffness it multiplies.
+        """
+        return tuple(p for p in self.matter if p.exact)
+
+    @property
+    def matter(self) -> tuple[Parameter, ...]:
+        """Values that matter to the modes: no damping; ratios only with a tolerance of their own."""
+        return tuple(
+            p
+            for p in self.parameters
+            if p.family != "damping" and not (p.exact and p.id.endswith(".dynamic_ratio"))
+        )
 
     def pencil(self, case: Case = Case.NOMINAL) -> Pencil:
         """Return K, M and C with all values taken in one case; equal to nominal without tolerances."""

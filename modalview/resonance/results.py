@@ -98,6 +98,8 @@ class Check:
     separation, worst_separation : float or None
         (fn - fe) / fe to the nearest excitation frequency, signed, at nominal and over tolerance
         (0 once the range overlaps the excitation).
+    worst_mode : int or None
+        The mode of ``worst_separation``: one that can lie in the band, if any can.
     drives : tuple of ModeDrive
         For the modes in or nearest to the band; empty before the solve.
     """
@@ -116,4 +118,5 @@ class Check:
     nearest_mode: int | None = None
     separation: float | None = None
     worst_separation: float | None = None
+    worst_mode: int | None = None
     drives: tuple[ModeDrive, ...] = ()

@@ -56,7 +56,7 @@ def look(request: Request, previous: Outlook | None = None) -> Outlook:
 
 
 def _checks(request: Request, assembly: Assembly) -> tuple[Check, ...]:
-    exactness = Exactness(assembly.taken_as_exact, sum(p.family != "damping" for p in assembly.parameters))
+    exactness = Exactness(len(assembly.exact_values), len(assembly.matter))
     cases = Cases(*(assembly.pencil(case).shifted for case in Case))
     found = []
     for band in bands(request.model):
@@ -71,7 +71,7 @@ def _stop_if(request: Request) -> None:
 
 
 def _notes(assembly: Assembly) -> tuple[str, ...]:
-    exact = [p for p in assembly.parameters if p.exact and p.family != "damping"]
+    exact = assembly.exact_values
     if not exact or not assembly.toleranced:
         return assembly.notes
     names = ", ".join(f"{p.label} {p.id.rpartition('.')[2]}" for p in exact)

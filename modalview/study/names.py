@@ -5,6 +5,7 @@ from collections.abc import Sequence
 import numpy as np
 import numpy.typing as npt
 
+from modalview.assembly.locks import speed_ratios
 from modalview.assembly.parameters import shown_name
 from modalview.model.parts import Model, Motion
 
@@ -39,9 +40,12 @@ def mode_name(model: Model, motion: Array, direction_shares: dict[str, float]) -
     --------
     "motor against pump", "all in step", "sway with some rocking".
     """
-    if model.motion in (Motion.SINGLE_AXIS, Motion.SHAFT_TRAIN):
-        column = 1 if model.motion is Motion.SINGLE_AXIS else 5
-        return _sides(model, motion[:, column])
+    if model.motion is Motion.SINGLE_AXIS:
+        return _sides(model, motion[:, 1])
+    if model.motion is Motion.SHAFT_TRAIN:
+        # Seen from one shaft, so that parts that turn together through reversing gears are in step.
+        ratios = speed_ratios(model)
+        return _sides(model, motion[:, 5] / [float(ratios[body.id][1]) for body in model.bodies])
     words = _DIRECTION_WORDS[model.motion]
     name = _directions(words, direction_shares)
     leader = _leader(model, motion)

@@ -5,6 +5,7 @@ from collections.abc import Sequence
 
 from modalview.model.parts import Machine, Model, SpeedRange
 from modalview.resonance.results import Check, Drive, Verdict
+from modalview.resonance.separation import separation
 from modalview.resonance.wording import hz_range, margin_text, percent
 from modalview.study.results import FoundMode
 from modalview.units.show import significant
@@ -54,22 +55,36 @@ def speed_text(machine: Machine) -> str:
 
 def _in_full(model: Model, check: Check, modes: Sequence[FoundMode]) -> str:
     head = excitation_text(model, check)
-    mode = next((m for m in modes if m.number == check.nearest_mode), None)
-    if mode is None or check.separation is None or check.undecided:
+    at_nominal = check.verdict is Verdict.IN_BAND
+    number = check.nearest_mode if at_nominal else check.worst_mode
+    mode = next((m for m in modes if m.number == number), None)
+    if mode is None or check.undecided:
         return f"{head}: {check.reason}."
     found = f"mode {mode.number} at {significant(mode.frequency_hz, 3)} Hz"
     low, high = mode.range_hz
     if high > low:
         found += f" ({significant(low, 3)} to {significant(high, 3)} over tolerance)"
+    place = _place(check, mode)
     wanted = f"{margin_text(check.band.margin)} is wanted"
-    if check.separation == 0:
-        place = "lies within the excitation range"
-    else:
-        side = "above" if check.separation > 0 else "below"
-        place = f"is {abs(100 * check.separation):.1f} % {side}"
-    if check.verdict is Verdict.NOMINAL_ONLY:
-        return f"{head}: {found} {place}, but over tolerance {_reach(check)}; {wanted}."
-    return f"{head}: {found} {place}{_faint(check)}; {wanted}."
+    if at_nominal:
+        return f"{head}: {found} {place}{_faint(check)}; {wanted}."
+    return f"{head}: {found} {place}, but over tolerance {_reach(check)}; {wanted}."
+
+
+def _place(check: Check, mode: FoundMode) -> str:
+    low, high = (edge / (2 * math.pi) for edge in check.band.excitation)
+    apart = separation((mode.frequency_hz, mode.frequency_hz), (low, high))
+    if apart == 0:
+        return "lies within the excitation range" if high > low else "lies on it"
+    return f"is {abs(100 * apart):.1f} % {'above' if apart > 0 else 'below'}"
+
+
+def _reach(check: Check) -> str:
+    if check.deciding_case is None:
+        return "the speed tolerance alone brings it into the band"
+    if check.worst_separation:
+        return f"it comes to {percent(check.worst_separation)} ({check.deciding_case})"
+    return f"it reaches the excitation itself ({check.deciding_case})"
 
 
 def _faint(check: Check) -> str:
@@ -77,14 +92,6 @@ def _faint(check: Check) -> str:
     if check.drives and all(drive.drive is Drive.HARDLY for drive in check.drives):
         return ", though this excitation hardly drives it"
     return ""
-
-
-def _reach(check: Check) -> str:
-    if check.deciding_case is None:
-        return "the speed tolerance reaches it"
-    if check.worst_separation:
-        return f"comes to {percent(check.worst_separation)} ({check.deciding_case})"
-    return f"the {check.deciding_case} case reaches the band"
 
 
 def _clear(model: Model, checks: Sequence[Check], *, alone: bool) -> list[str]:

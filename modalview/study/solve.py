@@ -164,41 +164,40 @@ def _effective_masses(assembly: Assembly, raw: Modes) -> list[tuple[Share, ...]]
 def _completed(
     model: Model, assembly: Assembly, check: Check, raw: Modes, modes: Sequence[FoundMode]
 ) -> Check:
-    """Add the nearest mode, the separations and the drives to a check."""
+    """Add the nearest mode, the separations, the deciding mode and the drives to a check."""
     elastic = [mode for mode in modes if mode.kind == ELASTIC]
     band = check.band
     excitation = (band.excitation[0] / RAD_PER_HZ, band.excitation[1] / RAD_PER_HZ)
     now = nearest(((m.number, (m.frequency_hz, m.frequency_hz)) for m in elastic), excitation)
     if now is None:
         return check
-    widened = (
-        band.tolerance[0] / (1 - band.margin[0]) / RAD_PER_HZ,
-        band.tolerance[1] / (1 + band.margin[1]) / RAD_PER_HZ,
-    )
-    worst = nearest(((m.number, m.range_hz) for m in elastic), widened)
+    low, high = (edge / RAD_PER_HZ for edge in band.tolerance)
+    widened = (low / (1 - band.margin[0]), high / (1 + band.margin[1]))
+    reaching = [mode for mode in elastic if mode.range_hz[1] >= low and mode.range_hz[0] <= high]
+    worst = nearest(((m.number, m.range_hz) for m in reaching or elastic), widened) or now
+    deciding = check.deciding_case
+    if deciding is not None and reaching:
+        # Both cases may bring a mode in: name the one of the mode that comes nearest.
+        deciding = "stiff-light" if modes[worst[0] - 1].frequency_hz < excitation[0] else "soft-heavy"
     return replace(
         check,
         nearest_mode=now[0],
         separation=now[1],
-        worst_separation=worst[1] if worst else None,
-        drives=_drives(model, assembly, check, raw, modes, now[0]),
+        worst_separation=worst[1],
+        worst_mode=worst[0],
+        deciding_case=deciding,
+        drives=_drives(model, assembly, check, raw, [mode.number for mode in reaching] or [now[0]]),
     )
 
 
 def _drives(
-    model: Model, assembly: Assembly, check: Check, raw: Modes, modes: Sequence[FoundMode], nearest_mode: int
+    model: Model, assembly: Assembly, check: Check, raw: Modes, numbers: Sequence[int]
 ) -> tuple[ModeDrive, ...]:
-    """Return the drives of the modes that can lie in the band, or of the nearest one."""
+    """Return how strongly a check's excitation drives the modes of these numbers."""
     machine = next(m for m in model.machines if m.id == check.band.machine)
     excitation = next(e for e in machine.excitations if e.id == check.band.excitation_id)
     drives = mode_drives(assembly.pencil(), raw, unit_force(assembly, excitation))
-    low, high = (edge / RAD_PER_HZ for edge in check.band.tolerance)
-    inside = [
-        mode.number
-        for mode in modes
-        if mode.kind == ELASTIC and mode.range_hz[1] >= low and mode.range_hz[0] <= high
-    ]
-    return tuple(drives[number - 1] for number in inside or [nearest_mode])
+    return tuple(drives[number - 1] for number in numbers)
 
 
 def _evidence(raw: Modes, modes: Sequence[FoundMode]) -> tuple[str, ...]:
