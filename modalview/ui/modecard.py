@@ -101,8 +101,14 @@ class ModeCard(QStyledItemDelegate):
         small = QFont(painter.font())
         small.setPointSizeF(_SMALL * small.pointSizeF())
         self._write(painter, room, range_text(mode), self._theme.quiet, small, _RIGHT)
-        self._write(painter, head.translated(0, line + 1), mode.name, self._theme.ink)
-        return inner.top() + 2 * line + 4
+        lines = 1 if painter.fontMetrics().horizontalAdvance(mode.name) <= inner.width() else 2
+        name = QRectF(inner.left(), inner.top() + line + 1, inner.width(), lines * line)
+        if lines == 1:
+            self._write(painter, name, mode.name, self._theme.ink)
+        else:
+            painter.setPen(QColor(self._theme.ink))
+            painter.drawText(name, Qt.TextFlag.TextWordWrap, mode.name)
+        return name.bottom() + 3
 
     def _paint_shares(self, painter: QPainter, inner: QRectF, mode: Any) -> float:
         """Paint the three largest strain shares and the leading mass from the bottom; return their top."""
@@ -124,7 +130,7 @@ class ModeCard(QStyledItemDelegate):
 
     def _paint_bar(self, painter: QPainter, row: QRectF, share: Any, font: QFont) -> None:
         metrics = QFontMetricsF(font)
-        label = 0.54 * row.width()
+        label = 0.58 * row.width()
         figure = metrics.horizontalAdvance("100 %") + 4
         self._write(
             painter, QRectF(row.left(), row.top(), label, row.height()), share.label, self._theme.quiet, font

@@ -102,6 +102,7 @@ class Modes(QWidget):
         self.row.mode_chosen.connect(self.mode_chosen)
         self.invitation = QLabel(self)
         self.invitation.setWordWrap(True)
+        self.invitation.setMargin(24)
         self.invitation.setAlignment(Qt.AlignmentFlag.AlignCenter)
         self.invitation.setProperty("role", "quiet")
         self._stack = QStackedLayout(self)

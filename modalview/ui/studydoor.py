@@ -12,7 +12,7 @@ from modalview.units.quantities import LENGTH, MASS, STIFFNESS
 
 @dataclass(frozen=True, slots=True)
 class Study:
-    """What of `modalview.study` the worker calls: Request, look(request, previous) and solve(request, outlook)."""
+    """What the worker calls: Request, look(request, previous) and solve(request, outlook)."""
 
     request: Callable[..., Any]
     look: Callable[[Any, Any], Any]

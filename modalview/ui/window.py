@@ -4,7 +4,7 @@ from pathlib import Path
 from typing import Any
 
 from PySide6.QtCore import Qt, QTimer, Signal
-from PySide6.QtGui import QCloseEvent, QDragEnterEvent, QDropEvent
+from PySide6.QtGui import QCloseEvent, QDragEnterEvent, QDropEvent, QFontMetrics
 from PySide6.QtWidgets import (
     QApplication,
     QHBoxLayout,
@@ -43,6 +43,8 @@ from modalview.ui.worker import Worker
 _SIZE = (1280, 800)
 _COLOURS = {"As the system": "system", "Light": "light", "Dark": "dark"}
 _ZOOM = 1.25
+# In heights of a line, so that larger text keeps its room.
+_RESULTS_WIDTH, _BELOW_HEIGHT = 17.5, 15.0
 
 
 class Window(QMainWindow):
@@ -102,7 +104,7 @@ class Window(QMainWindow):
             places.addWidget(widget)
         places.setStretchFactor(0, 3)
         places.setStretchFactor(1, 1)
-        places.setSizes([660, 326, 294])
+        places.setSizes([652, 322, 306])
         places.setChildrenCollapsible(False)
         return places
 
@@ -117,7 +119,7 @@ class Window(QMainWindow):
         return above
 
     def _tabs(self) -> QWidget:
-        below = QWidget(self)
+        below = self.below = QWidget(self)
         self.tabs = QTabBar(below)
         self.tabs.setDrawBase(False)
         self.tabs.addTab("Modes")
@@ -194,6 +196,9 @@ class Window(QMainWindow):
         self.parts.lines.set_theme(self._theme)
         self.parts.fit_columns()
         self.play_bar.set_theme(self._theme)
+        line = QFontMetrics(QApplication.font()).height()
+        self.results.setMinimumWidth(round(_RESULTS_WIDTH * line))
+        self.below.setMinimumHeight(round(_BELOW_HEIGHT * line))
         self.welcome.set_theme(self._theme)
 
     def on_theme(self, choice: Any) -> None:
