@@ -12,8 +12,9 @@ from modalview.assembly.condense import massless_recovery
 from modalview.assembly.massroot import mass_root_inverse
 from modalview.assembly.quadratic import QuadraticForm
 from modalview.errors import NumericalError
+from modalview.factor.parts import PencilParts
 from modalview.factor.pattern import Pattern
-from modalview.factor.shifted import PencilParts, ShiftedPencil, shifted_pencil
+from modalview.factor.shifted import ShiftedPencil, shifted_pencil
 
 Array = npt.NDArray[np.float64]
 

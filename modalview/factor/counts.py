@@ -17,6 +17,12 @@ FIRST_SHARE = 1e-9
 NUDGE = 1e-7
 NUDGES = 3
 
+# Sparse factorizations tried in all: the first, the nudges and as many moves to a proven distance.
+TRIES = 1 + 2 * NUDGES
+
+# An edge that is too near for its uncertainty moves to this multiple of it.
+STAND_OFF = 1.25
+
 # Dense pivoting is tried up to this size. It rescues only shifts where sparse pivots still vanish after the
 # nudges; a model too stiff for the sparse count is too stiff for it too, so a larger limit buys seconds of
 # waiting for the same answer.
@@ -153,13 +159,13 @@ def _outward(shifted: ShiftedPencil, lam: float, side: float) -> Inertia | str:
     unit = NUDGE / LARGEST_SHARE * allowed
     distance = FIRST_SHARE / LARGEST_SHARE * allowed
     nudged = 0
-    while True:
+    for _ in range(TRIES):
         sigma = _displaced(lam, side, distance)
         found = shifted.factorize(sigma)
         if _proves(found, lam, side, allowed):
             return found
-        if distance < 2 * found.uncertainty <= unit:
-            distance = 2 * found.uncertainty
+        if distance < STAND_OFF * found.uncertainty <= allowed / 2:
+            distance = STAND_OFF * found.uncertainty
         elif nudged < NUDGES:
             nudged += 1
             distance = nudged * unit

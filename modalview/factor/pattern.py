@@ -96,14 +96,6 @@ class Pattern:
         filled.data = data
         return filled
 
-    def holds(self, matrix: sp.csc_array) -> bool:
-        """Return whether every stored entry of a matrix has a place here."""
-        if matrix.shape[0] != self.n:
-            return False
-        keys = self._keys(matrix)
-        found = np.searchsorted(self.keys, keys)
-        return bool(np.array_equal(self.keys[np.minimum(found, self.keys.size - 1)], keys))
-
     def values(self, matrix: sp.csc_array) -> Array:
         """Return the values of a matrix whose entries lie in this pattern, at the stored positions."""
         data = np.zeros(self.keys.size)

@@ -10,14 +10,17 @@ import scipy.sparse as sp
 from modalview.errors import NumericalError
 from modalview.factor.dense import dense_inertia
 from modalview.factor.held import held_margin
-from modalview.factor.pattern import Factors, Pattern, union_pattern
-from modalview.factor.rounding import SLACK, UNIT, gamma
+from modalview.factor.parts import PencilParts
+from modalview.factor.pattern import Pattern, union_pattern
+from modalview.factor.uncertainty import Extents, extents_of, factor_rounding
 
 if TYPE_CHECKING:
     from scipy.sparse.linalg import SuperLU
 
 Array = npt.NDArray[np.float64]
-Indices = npt.NDArray[np.intp]
+
+# Margins asked of a large massless block, in turn.
+MARGINS = (1e-2, 1e-4, 1e-6, 1e-8)
 
 
 @dataclass(frozen=True, slots=True, eq=False)
@@ -44,40 +47,6 @@ class Inertia:
     uncertainty: float
     method: str
     lu: "SuperLU[np.float64] | None" = None
-
-
-@dataclass(frozen=True, slots=True, eq=False)
-class Extents:
-    """|X| and what is known of rounding at every shift, by rows of the factors.
-
-    X = [W, sqrt(tau) Z] is the congruence that brings K - sigma M to standard form; tau follows the shift.
-
-    Attributes
-    ----------
-    basis_t : csr_array (modes, n)
-        |W|.T.
-    reach : array (n,)
-        |W| 1.
-    held : array (n,)
-        |Z| 1: 1 / sqrt(K_ii) on massless coordinates, zero elsewhere.
-    formed, formed_held : arrays (n,)
-        Rounding of K times ``reach`` and ``held``.
-    inertial : array (n,)
-        Rounding of sigma M times ``reach``, per unit of sigma.
-    margin : float
-        No eigenvalue of the massless block, scaled to a unit diagonal, lies below.
-    top : float
-        max_i (|S| 1)_i bounded from above: no eigenvalue is larger in absolute value.
-    """
-
-    basis_t: sp.csr_array
-    reach: Array
-    held: Array
-    formed: Array
-    formed_held: Array
-    inertial: Array
-    margin: float
-    top: float
 
 
 @dataclass(frozen=True, slots=True, eq=False)
@@ -154,13 +123,9 @@ class ShiftedPencil:
         turned = pattern.turned
         if not (np.array_equal(lu.perm_r, turned) and np.array_equal(lu.perm_c, turned)):
             return Inertia(sigma, 0, np.inf, "sparse LDL^T", lu)
-        tau = self._tau(sigma)
-        vector = self._vector(tau)
-        if pattern.factors is not None and pattern.factors.describe(lu):
-            pivots, rounding = _mirrored(pattern.factors, pattern.terms, lu, vector)
-        else:
-            pivots, rounding = _unmirrored(pattern.terms, lu, vector)
-        delta = self._uncertainty(sigma, tau, rounding)
+        extents = self.extents
+        pivots, rounding = factor_rounding(pattern, lu, extents.vector(extents.tau(sigma)))
+        delta = extents.uncertainty(sigma, rounding)
         return Inertia(sigma, int(np.count_nonzero(pivots < 0)), delta, "sparse LDL^T", lu)
 
     def solve(self, found: Inertia, right: Array) -> Array:
@@ -184,66 +149,16 @@ class ShiftedPencil:
         pattern = self.pattern
         matrix = pattern.matrix(self.stiffness - sigma * self.inertia).toarray()
         order = np.argsort(pattern.turned)
-        tau = self._tau(sigma)
-        found = dense_inertia(matrix[np.ix_(order, order)], self._vector(tau))
+        extents = self.extents
+        found = dense_inertia(matrix[np.ix_(order, order)], extents.vector(extents.tau(sigma)))
         if found is None:
             return Inertia(sigma, 0, np.inf, "dense Bunch-Kaufman")
         negative, rounding = found
-        return Inertia(sigma, negative, self._uncertainty(sigma, tau, rounding), "dense Bunch-Kaufman")
+        return Inertia(sigma, negative, extents.uncertainty(sigma, rounding), "dense Bunch-Kaufman")
 
     def least_uncertainty(self, sigma: float) -> float:
         """Return the part of the uncertainty that needs no factorization: no count is sharper than this."""
-        return self._uncertainty(sigma, self._tau(sigma), np.zeros(self.n))
-
-    def _tau(self, sigma: float) -> float:
-        return max(abs(sigma), 1e-6 * self.extents.top)
-
-    def _vector(self, tau: float) -> Array:
-        extents = self.extents
-        return extents.reach + np.sqrt(tau) * extents.held if extents.margin < np.inf else extents.reach
-
-    def _uncertainty(self, sigma: float, tau: float, factoring: Array) -> float:
-        extents = self.extents
-        rows = factoring + extents.formed + abs(sigma) * extents.inertial
-        if extents.margin < np.inf:
-            rows = rows + np.sqrt(tau) * extents.formed_held
-        delta = float((extents.basis_t @ rows).max())
-        if extents.margin < np.inf:
-            delta = max(delta, float(np.sqrt(tau) * (extents.held * rows).max()))
-        delta *= SLACK
-        return delta if delta < 0.5 * tau * extents.margin else np.inf
-
-
-@dataclass(frozen=True, slots=True, eq=False)
-class PencilParts:
-    """What a shifted pencil is made of.
-
-    Parameters
-    ----------
-    K, M : csc_array (n, n)
-        Symmetric, both triangles stored; N/m and kg or their rotational fellows. M is taken as stored.
-    basis : csc_array (n, modes)
-        W with W.T M W = 1 and K W zero on massless coordinates.
-    formation : csc_array (n, n)
-        Sum of |k_i| |a_i| |a_i|.T over the terms of K; |K| where K is given.
-    massless : bool array (n,)
-        Rows of M that are wholly zero.
-    terms : int
-        Most terms that meet in one entry of K; 0 where K is given and taken as exact.
-    rigid_modes : int
-        Known number of motions that stretch nothing.
-    definite : bool
-        K is a sum of positive terms, so no eigenvalue is negative.
-    """
-
-    K: sp.csc_array
-    M: sp.csc_array
-    basis: sp.csc_array
-    formation: sp.csc_array
-    massless: npt.NDArray[np.bool_]
-    terms: int = 0
-    rigid_modes: int = 0
-    definite: bool = False
+        return self.extents.uncertainty(sigma, np.zeros(self.n))
 
 
 def shifted_pencil(parts: PencilParts, pattern: Pattern | None = None) -> ShiftedPencil:
@@ -259,69 +174,27 @@ def shifted_pencil(parts: PencilParts, pattern: Pattern | None = None) -> Shifte
     -----
     Cost: two sparse factorizations without a pattern.
     """
-    K, M = parts.K, parts.M
+    K, M, massless = parts.K, parts.M, parts.massless
     if pattern is None:
         pattern = union_pattern(K, M)
+    margin = held_margin(K, massless, _lowest) if massless.any() else np.inf
     return ShiftedPencil(
         pattern=pattern,
         stiffness=pattern.values(K),
         inertia=pattern.values(M),
-        extents=_extents(parts, pattern),
+        extents=extents_of(parts, pattern, margin),
         rigid_modes=parts.rigid_modes,
         definite=parts.definite,
     )
 
 
-def _extents(parts: PencilParts, pattern: Pattern) -> Extents:
-    massless, formation = parts.massless, parts.formation
-    absolute = sp.csr_array(abs(parts.basis))
-    reach: Array = np.asarray(absolute.sum(axis=1), dtype=float).ravel()
-    held = np.zeros(pattern.n)
-    diagonal = parts.K.diagonal()[massless]
-    held[massless] = 1 / np.sqrt(np.where(diagonal > 0, diagonal, np.inf))
-    share = gamma(2) + (gamma(parts.terms + 2) if parts.terms else 0.0)
-    order = np.argsort(pattern.place)
-    return Extents(
-        basis_t=sp.csr_array(absolute[order].T),
-        reach=reach[order],
-        held=held[order],
-        formed=share * (formation @ reach)[order],
-        formed_held=share * (formation @ held)[order],
-        inertial=gamma(2) * (abs(parts.M) @ reach)[order],
-        margin=held_margin(parts.K, massless) if massless.any() else np.inf,
-        top=SLACK * float((absolute.T @ (formation @ reach)).max()),
-    )
-
-
-def _mirrored(
-    shape: Factors, terms: Indices, lu: "SuperLU[np.float64]", vector: Array
-) -> tuple[Array, Array]:
-    """Pivots and the rounding of the factorization times ``vector``, when U mirrors L entry by entry."""
-    upper = lu.U.data[shape.mirror]
-    pivots = upper[shape.diagonal]
-    apart, size = _apart_and_size(upper, pivots[shape.columns] * lu.L.data)
-    starts = shape.lower_indptr[:-1]
-    grown = np.add.reduceat(size * (gamma(terms + 3) * vector)[shape.lower_indices], starts)
-    skew = np.add.reduceat(apart * vector[shape.lower_indices], starts)
-    inverse = 1 / np.abs(pivots)
-    entries = size * (grown * inverse)[shape.columns] + apart * (0.25 * skew * inverse)[shape.columns]
-    return pivots, np.bincount(shape.lower_indices, entries, vector.size).astype(float, copy=False)
-
-
-def _unmirrored(terms: Indices, lu: "SuperLU[np.float64]", vector: Array) -> tuple[Array, Array]:
-    """Do the same by sparse products, when some entry cancelled to an exact zero."""
-    upper = sp.csr_array(lu.U)
-    pivots: Array = np.asarray(upper.diagonal(), dtype=float)
-    mirror = sp.csr_array(sp.diags_array(pivots) @ lu.L.T)
-    apart = abs(upper - mirror) + 2 * UNIT * abs(mirror)
-    size = abs(upper) + apart
-    inverse = 1 / np.abs(pivots)
-    rounding = size.T @ (inverse * (size @ (gamma(terms + 3) * vector)))
-    rounding += apart.T @ (0.25 * inverse * (apart @ vector))
-    return pivots, np.asarray(rounding, dtype=float)
-
-
-def _apart_and_size(upper: Array, mirror: Array) -> tuple[Array, Array]:
-    """At least |U - D L^T| = 2 |D R^T|, its evaluation included, and at least |U| and |D L^T|."""
-    apart = np.abs(upper - mirror) + 2 * UNIT * np.abs(mirror)
-    return apart, np.abs(upper) + apart
+def _lowest(matrix: sp.csc_array) -> float:
+    """Bound the lowest eigenvalue of a matrix of unit diagonal from below by counts; 0 proves nothing."""
+    eye = sp.csc_array(sp.eye_array(matrix.shape[0]))
+    none_massless = np.zeros(matrix.shape[0], dtype=bool)
+    shifted = shifted_pencil(PencilParts(matrix, eye, eye, sp.csc_array(abs(matrix)), none_massless))
+    for sigma in MARGINS:
+        found = shifted.factorize(sigma)
+        if found.negative == 0 and found.uncertainty < sigma:
+            return sigma - found.uncertainty
+    return 0.0

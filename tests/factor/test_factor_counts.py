@@ -147,6 +147,17 @@ def test_a_massless_coordinate_held_by_next_to_nothing_makes_no_count_wrong():
             assert_one_sided(pencil, lam)
 
 
+def test_a_long_run_of_massless_junctions_is_proven_held_by_counts():
+    n = 603
+    mass = np.zeros(n)
+    mass[[0, -1]] = 1.0
+    pencil = chain(np.full(n + 1, 602.0), mass)
+    # two unit masses, each on a spring of 602, joined by 602 springs of 602 in series: lambda = 602 and 604
+    found = [count_at_most(pencil.shifted, lam).number for lam in (601.9, 602.1, 603.9, 604.1)]
+    assert found == [0, 1, 1, 2]
+    assert 0 < pencil.shifted.extents.margin <= 1 - np.cos(np.pi / (n - 1))
+
+
 def test_a_block_of_mass_counts_like_the_standard_form():
     rng = np.random.default_rng(4)
     n = 12

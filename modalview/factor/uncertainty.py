@@ -1,0 +1,145 @@
+"""How far rounding may displace the eigenvalues that pivots count."""
+
+from dataclasses import dataclass
+from typing import TYPE_CHECKING
+
+import numpy as np
+import numpy.typing as npt
+import scipy.sparse as sp
+
+from modalview.factor.parts import PencilParts
+from modalview.factor.pattern import Factors, Pattern
+from modalview.factor.rounding import SLACK, UNIT, gamma
+
+if TYPE_CHECKING:
+    from scipy.sparse.linalg import SuperLU
+
+Array = npt.NDArray[np.float64]
+Indices = npt.NDArray[np.intp]
+
+
+@dataclass(frozen=True, slots=True, eq=False)
+class Extents:
+    """|X| and what is known of rounding at every shift, by rows of the factors.
+
+    X = [W, sqrt(tau) Z] is the congruence that brings K - sigma M to standard form; tau follows the shift.
+
+    Attributes
+    ----------
+    basis_t : csr_array (modes, n)
+        |W|.T.
+    reach : array (n,)
+        |W| 1.
+    held : array (n,)
+        |Z| 1: 1 / sqrt(K_ii) on massless coordinates, zero elsewhere.
+    formed, formed_held : arrays (n,)
+        Rounding of K times ``reach`` and ``held``.
+    inertial : array (n,)
+        Rounding of sigma M times ``reach``, per unit of sigma.
+    margin : float
+        No eigenvalue of the massless block, scaled to a unit diagonal, lies below.
+    top : float
+        max_i (|S| 1)_i bounded from above: no eigenvalue is larger in absolute value.
+    """
+
+    basis_t: sp.csr_array
+    reach: Array
+    held: Array
+    formed: Array
+    formed_held: Array
+    inertial: Array
+    margin: float
+    top: float
+
+    def tau(self, sigma: float) -> float:
+        """Scale of the massless block at a shift: of the size of what is counted."""
+        return max(abs(sigma), 1e-6 * self.top)
+
+    def vector(self, tau: float) -> Array:
+        """Return |X| 1, by rows of the factors."""
+        return self.reach + np.sqrt(tau) * self.held if self.margin < np.inf else self.reach
+
+    def uncertainty(self, sigma: float, factoring: Array) -> float:
+        """Bound || |X|^T F |X| || by its largest row sum; infinite where the massless block might be lost.
+
+        Parameters
+        ----------
+        sigma : float
+        factoring : array (n,)
+            Rounding of the factorization times ``vector(tau(sigma))``; zero gives the part that needs none.
+        """
+        tau = self.tau(sigma)
+        rows = factoring + self.formed + abs(sigma) * self.inertial
+        if self.margin < np.inf:
+            rows = rows + np.sqrt(tau) * self.formed_held
+        delta = float((self.basis_t @ rows).max())
+        if self.margin < np.inf:
+            delta = max(delta, float(np.sqrt(tau) * (self.held * rows).max()))
+        delta *= SLACK
+        return delta if delta < 0.5 * tau * self.margin else np.inf
+
+
+def extents_of(parts: PencilParts, pattern: Pattern, margin: float) -> Extents:
+    """Gather what the uncertainty at every shift is made of; ``margin`` is infinite without massless ones."""
+    massless, formation = parts.massless, parts.formation
+    absolute = sp.csr_array(abs(parts.basis))
+    reach: Array = np.asarray(absolute.sum(axis=1), dtype=float).ravel()
+    held = np.zeros(pattern.n)
+    diagonal = parts.K.diagonal()[massless]
+    held[massless] = 1 / np.sqrt(np.where(diagonal > 0, diagonal, np.inf))
+    share = gamma(2) + (gamma(parts.terms + 2) if parts.terms else 0.0)
+    order = np.argsort(pattern.place)
+    return Extents(
+        basis_t=sp.csr_array(absolute[order].T),
+        reach=reach[order],
+        held=held[order],
+        formed=share * (formation @ reach)[order],
+        formed_held=share * (formation @ held)[order],
+        inertial=gamma(2) * (abs(parts.M) @ reach)[order],
+        margin=margin,
+        top=SLACK * float((absolute.T @ (formation @ reach)).max()),
+    )
+
+
+def factor_rounding(pattern: Pattern, lu: "SuperLU[np.float64]", vector: Array) -> tuple[Array, Array]:
+    """Return the pivots, and what the factorization's rounding makes of a non-negative vector (n,).
+
+    The rounding is gamma_(s+3) |L||U| + |R||D||R|^T of ``ShiftedPencil.factorize``, times ``vector``.
+    """
+    if pattern.factors is not None and pattern.factors.describe(lu):
+        return _mirrored(pattern.factors, pattern.terms, lu, vector)
+    return _unmirrored(pattern.terms, lu, vector)
+
+
+def _mirrored(
+    shape: Factors, terms: Indices, lu: "SuperLU[np.float64]", vector: Array
+) -> tuple[Array, Array]:
+    """Pivots and the rounding of the factorization times ``vector``, when U mirrors L entry by entry."""
+    upper = lu.U.data[shape.mirror]
+    pivots = upper[shape.diagonal]
+    apart, size = _apart_and_size(upper, pivots[shape.columns] * lu.L.data)
+    starts = shape.lower_indptr[:-1]
+    grown = np.add.reduceat(size * (gamma(terms + 3) * vector)[shape.lower_indices], starts)
+    skew = np.add.reduceat(apart * vector[shape.lower_indices], starts)
+    inverse = 1 / np.abs(pivots)
+    entries = size * (grown * inverse)[shape.columns] + apart * (0.25 * skew * inverse)[shape.columns]
+    return pivots, np.bincount(shape.lower_indices, entries, vector.size).astype(float, copy=False)
+
+
+def _unmirrored(terms: Indices, lu: "SuperLU[np.float64]", vector: Array) -> tuple[Array, Array]:
+    """Do the same by sparse products, when some entry cancelled to an exact zero."""
+    upper = sp.csr_array(lu.U)
+    pivots: Array = np.asarray(upper.diagonal(), dtype=float)
+    mirror = sp.csr_array(sp.diags_array(pivots) @ lu.L.T)
+    apart = abs(upper - mirror) + 2 * UNIT * abs(mirror)
+    size = abs(upper) + apart
+    inverse = 1 / np.abs(pivots)
+    rounding = size.T @ (inverse * (size @ (gamma(terms + 3) * vector)))
+    rounding += apart.T @ (0.25 * inverse * (apart @ vector))
+    return pivots, np.asarray(rounding, dtype=float)
+
+
+def _apart_and_size(upper: Array, mirror: Array) -> tuple[Array, Array]:
+    """At least |U - D L^T| = 2 |D R^T|, its evaluation included, and at least |U| and |D L^T|."""
+    apart = np.abs(upper - mirror) + 2 * UNIT * np.abs(mirror)
+    return apart, np.abs(upper) + apart
