@@ -62,6 +62,9 @@ def title_block(lines: TitleLines, sheet_width: float, text_scale: float) -> tup
         for column in ((lines.title, lines.motion), (lines.revision, lines.checked))
     )
     share = min(max(wide / (wide + narrow), TITLE_SHARE[0]), TITLE_SHARE[1])
+    # The verdict is never cut short: the title gives way.
+    least = text_width(lines.checked, Size.SMALL, text_scale=text_scale) + 16.0
+    share = min(share, 1.0 - least / width)
     split, middle = left + share * width, top + height / 2
     cross = np.array([[left, middle, left + width, middle], [split, top, split, top + height]])
     items: list[Item] = [

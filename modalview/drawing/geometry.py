@@ -116,10 +116,8 @@ class SheetGeometry:
         Pixels of the largest motion at amplitude 1.
     labels, body_labels : tuple of Text, tuple of (body, Text)
         Laid out texts; those of bodies move with them.
-    arrows : array (n, 4)
-        Excitations beside bodies, pixels.
     body_arrows : tuple of (body, array (n, 4))
-        Excitations at places on bodies; they move with them.
+        Excitations, pixels; they move with their bodies.
     leaders : array (n, 4)
         Lines from texts to the links they belong to, where they stand apart.
     unlabelled : tuple of str
@@ -145,7 +143,6 @@ class SheetGeometry:
     reach: float
     labels: tuple[Text, ...] = ()
     body_labels: tuple[tuple[int, Text], ...] = ()
-    arrows: Floats | None = None
     body_arrows: tuple[tuple[int, Floats], ...] = ()
     leaders: Floats | None = None
     unlabelled: tuple[str, ...] = ()

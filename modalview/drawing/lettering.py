@@ -18,6 +18,7 @@ from modalview.model.parts import Motion
 MOST_LABELS = 120
 MOST_ALIKE = 2  # more links of one text than this are written once
 LINK_HALF = 9.0  # half the width that a symbol takes, pixels
+SWAY = 14.0  # pixels beside a body that its motion may cover
 SAMPLES = 8  # rectangles along a link
 APART = 40.0  # pixels: a text further from its link has a leader
 SHORT = 110.0  # pixels: shorter links may be written at the side of the body they carry
@@ -39,14 +40,15 @@ def lettered(geometry: SheetGeometry) -> SheetGeometry:
     inner.take(np.vstack([_taken_inside(geometry), *(push.box for push in acting)]))
     letters = _Letters([], [], [], [])
     _name_bodies(geometry, board, inner, letters)
-    _name_pushes(geometry, acting, (board, inner), letters)
+    if geometry.model.motion is Motion.PLANE:
+        board.take(geometry.boxes + np.array([-SWAY, 0.0, SWAY, 0.0]))
     _name_links(geometry, board, letters)
+    _name_pushes(geometry, acting, (board, inner), letters)
     return replace(
         geometry,
         labels=tuple(letters.labels),
         body_labels=tuple(letters.body_labels),
-        arrows=np.vstack([np.zeros((0, 4)), *(push.segments for push in acting if not push.on_body)]),
-        body_arrows=tuple((push.body, push.segments) for push in acting if push.on_body),
+        body_arrows=tuple((push.body, push.segments) for push in acting),
         leaders=np.array(letters.leaders).reshape(-1, 4),
         unlabelled=tuple(letters.unlabelled),
     )
@@ -123,7 +125,9 @@ def _name_bodies(geometry: SheetGeometry, board: Board, inner: Board, letters: _
         if not placed and geometry.train is not None:
             placed = board.place(lines, _by_disc(geometry, number))
         if not placed and values:
-            placed = board.place(lines, round_about(_rectangle(geometry.boxes[number]), 12.0))
+            box = geometry.boxes[number]
+            far = ring_about(*((box[:2] + box[2:]) / 2).tolist())
+            placed = board.place(lines, round_about(_rectangle(box), 12.0) + far)
         letters.body_labels += [(number, text) for text in placed]
         if not placed:
             letters.unlabelled.append(body.id)
@@ -168,7 +172,7 @@ def _name_pushes(
                 continue
         x, y = push.box[0, 0], push.box[0, 1]
         placed = board.place(lines, [*push.spots, *ring_about(float(x), float(y))])
-        letters.labels += placed
+        letters.body_labels += [(push.body, text) for text in placed]
         if not placed:
             letters.unlabelled.append(push.texts[0])
 

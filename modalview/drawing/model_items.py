@@ -94,11 +94,6 @@ def paper_items(geometry: SheetGeometry, title: TitleLines | None) -> tuple[Item
     return shown
 
 
-def excitation_items(geometry: SheetGeometry) -> tuple[Item, ...]:
-    """Return the arrows of the excitations that stand beside bodies."""
-    return () if geometry.arrows is None else (Lines(geometry.arrows, Role.WARN, 2.0),)
-
-
 def leader_items(geometry: SheetGeometry) -> tuple[Item, ...]:
     """Return the lines from texts to their links."""
     return () if geometry.leaders is None else (Lines(geometry.leaders, Role.GHOST, 0.9),)

@@ -10,7 +10,6 @@ from modalview.drawing.layout import GROUND
 from modalview.drawing.model_items import (
     FULL,
     axis_items,
-    excitation_items,
     ghost_items,
     ground_items,
     label_items,
@@ -111,7 +110,7 @@ def frozen(geometry: SheetGeometry, posed: Pose, factor: float = 1.0) -> Drawing
 def still_drawing(geometry: SheetGeometry, title: TitleLines | None) -> Drawing:
     """Return what lies under the frames: paper, ground, labels, title block and the ghost at rest."""
     items = paper_items(geometry, title) + ground_items(geometry) + ghost_items(geometry)
-    items += axis_items(geometry) + train_items(geometry) + excitation_items(geometry)
+    items += axis_items(geometry) + train_items(geometry)
     items += leader_items(geometry)
     return sheet_of((*items, *geometry.labels), geometry.width, geometry.height, geometry.text_scale)
 

@@ -10,7 +10,7 @@ from modalview.drawing.labels import Board, Line, Spot
 from modalview.drawing.primitives import Anchor, Box, Circles, Drawing, Item, Lines, Role, Size, Text
 from modalview.drawing.scalecontent import ScaleBand, ScaleContent, ScaleCount, ScaleMode
 from modalview.drawing.symbols import arrow, hatched
-from modalview.drawing.textsize import text_width
+from modalview.drawing.textsize import BOLD, text_width
 from modalview.resonance.results import Verdict
 from modalview.units.show import significant
 
@@ -167,12 +167,25 @@ def _bands(frame: _Frame, bands: tuple[ScaleBand, ...]) -> tuple[Item, ...]:
 
 
 def _band_label(frame: _Frame, band: ScaleBand) -> list[Text]:
-    room = frame.labels - frame.left - 8
-    label = shortened(band.label, room / 1.12, Size.SMALL, frame.text_scale)
-    line = (Line(label, Role.WARN, Size.SMALL, bold=True),)
-    own, gap = frame.axis.y_of(band.to), 9.5 * frame.text_scale
+    room = (frame.labels - frame.left - 8) / BOLD
+    line = tuple(
+        Line(shortened(part, room, Size.SMALL, frame.text_scale), Role.WARN, Size.SMALL, bold=True)
+        for part in _in_two(band.label, room, frame.text_scale)
+    )
+    own, gap = frame.axis.y_of(band.to), 2.5 + frame.board.size(line)[1] / 2
     beside = [Spot(frame.left + 6, own - gap, 1, 0), Spot(frame.left + 6, own + gap, 1, 0)]
     return frame.board.place(line, beside) or _labelled(frame, line, own - gap)
+
+
+def _in_two(text: str, room: float, text_scale: float) -> tuple[str, ...]:
+    """Break a text that is wider than its room after the last word that fits."""
+    words = text.split()
+    if len(words) < 2 or text_width(text, Size.SMALL, text_scale=text_scale) <= room:
+        return (text,)
+    heads = [" ".join(words[:count]) for count in range(1, len(words))]
+    fitting = [head for head in heads if text_width(head, Size.SMALL, text_scale=text_scale) <= room]
+    head = fitting[-1] if fitting else heads[0]
+    return head, text[len(head) :].strip()
 
 
 def _labelled(frame: _Frame, lines: tuple[Line, ...], y: float) -> list[Text]:
@@ -194,7 +207,7 @@ def _off_scale(frame: _Frame, bands: list[ScaleBand]) -> tuple[Item, ...]:
         line = Line(f"{band.label} {' to '.join(span)} Hz", Role.WARN, Size.SMALL, bold=True)
         room = frame.x(_COUNT) - 12.0 * frame.text_scale - frame.left - 22
         line = Line(
-            shortened(line.text, room / 1.12, Size.SMALL, frame.text_scale), Role.WARN, Size.SMALL, bold=True
+            shortened(line.text, room / BOLD, Size.SMALL, frame.text_scale), Role.WARN, Size.SMALL, bold=True
         )
         steps = range(0, 200, 4) if above else range(0, -200, -4)
         placed = frame.board.place((line,), [Spot(frame.left + 22, y + step, 1, 0) for step in steps])
@@ -293,7 +306,9 @@ def _modes(frame: _Frame, modes: tuple[ScaleMode, ...]) -> tuple[Item, ...]:
     """Draw found modes as ticks with their tolerance range and number."""
     axis = frame.axis
     shown = sorted((m for m in modes if axis.low_hz <= m.hz <= axis.high_hz), key=lambda mode: -mode.hz)
-    left, right = frame.x(_MODE[0]), frame.x(_MODE[1])
+    widest = max((str(mode.number) for mode in shown), key=len, default="")
+    room = 8.0 + text_width(widest, Size.SMALL, bold=True, text_scale=frame.text_scale)
+    left, right = frame.x(_MODE[0]), min(frame.x(_MODE[1]), frame.right - room)
     items: list[Item] = []
     for mode in shown:
         y = axis.y_of(mode.hz)

@@ -9,7 +9,6 @@ from modalview.drawing.layout import GROUND
 from modalview.drawing.lettering import lettered
 from modalview.drawing.model_items import (
     axis_items,
-    excitation_items,
     ground_items,
     label_items,
     leader_items,
@@ -53,7 +52,7 @@ def sheet_drawing(
     """Return the sheet at rest, with the selected part framed."""
     items = paper_items(geometry, title) + ground_items(geometry) + axis_items(geometry)
     items += train_items(geometry)
-    items += leader_items(geometry) + part_items(geometry, geometry.points.rest) + excitation_items(geometry)
+    items += leader_items(geometry) + part_items(geometry, geometry.points.rest)
     items += (*geometry.labels, *label_items(geometry), *_frame(geometry, selected))
     return sheet_of(items, geometry.width, geometry.height, geometry.text_scale)
 
