@@ -1,6 +1,6 @@
 """The independent coordinates of a model: rigid clusters, held directions, exact gears, massless parts.
 
-Steps, all in exact arithmetic on the numbers as stored:
+Steps, all in exact arithmetic on the numbers as typed:
 
 1. Bodies joined rigidly in all directions form a cluster, moving with its joint centre of gravity.
 2. Held directions, partly listed rigid links and exact gears are one homogeneous set of forms; its
@@ -25,13 +25,14 @@ from modalview.assembly.kinematics import (
     Freedom,
     Places,
     Vector,
+    as_typed,
     combined,
     cross,
     minus,
     places,
 )
 from modalview.assembly.locks import gear_locks
-from modalview.assembly.masses import has_inertia
+from modalview.assembly.masses import has_inertia, inertia_forms
 from modalview.assembly.parameters import shown_name
 from modalview.assembly.stretch import exact_joints, stretches
 from modalview.errors import Fault, ModelFaultsError
@@ -50,6 +51,8 @@ class Coordinates:
         One for each coordinate: the body whose cluster carries it, and the freedom.
     to_bodies : csr_array (bodies * freedoms, n)
         Motion of every body's freedoms, in the order of the model, from the coordinates.
+    unrounded : mapping
+        Entries of ``to_bodies`` that no double holds, by row and column, exactly.
     massless : bool array (n,)
     substitutions : tuple of (Freedom, mapping)
         Massless directions that were split off or left out, in order; see :meth:`of_motion`.
@@ -63,6 +66,7 @@ class Coordinates:
 
     free: tuple[Freedom, ...]
     to_bodies: sp.csr_array
+    unrounded: Mapping[tuple[int, int], Fraction]
     massless: np.ndarray
     substitutions: tuple[tuple[Freedom, Mapping[Freedom, Fraction]], ...]
     centres: Mapping[str, Vector]
@@ -99,14 +103,14 @@ class _Frames:
     def _centre(self, bodies: Sequence[Body]) -> Vector:
         if len(bodies) == 1:
             return self.exact.centre[bodies[0].id]
-        weights = [Fraction(body.mass.si) if body.mass else Fraction(0) for body in bodies]
+        weights = [as_typed(body.mass.si) if body.mass else Fraction(0) for body in bodies]
         if not any(weights):
             weights = [Fraction(1)] * len(bodies)
         total = sum(weights)
         places_ = [self.exact.centre[body.id] for body in bodies]
-        # Rounded to a double: any point serves, as long as it is the same everywhere.
+        # Not rounded: masses on one line keep their centre on it, so that turning about it moves none.
         x, y, z = (
-            Fraction(float(sum(w * p[i] for w, p in zip(weights, places_, strict=True)) / total))
+            sum((w * p[i] for w, p in zip(weights, places_, strict=True)), Fraction(0)) / total
             for i in range(3)
         )
         return x, y, z
@@ -153,20 +157,22 @@ def independent_coordinates(model: Model) -> Coordinates:
     free = [key for key in unknowns if key not in solved]
     masses = _mass_forms(model, frames, solved)
     massless, split = _massless_directions(model, frames, free, masses)
-    dropped, drop_notes = _unresisted(model, frames, solved, massless, split)
+    dropped, drop_notes = _unresisted(model, frames, solved, [key for key in free if key in massless], split)
     left = tuple(key for key in free if key not in {d[0] for d in dropped})
     if not left:
         raise ModelFaultsError(
             (Fault("model", "no motion is left: every direction is held, locked or massless"),)
         )
+    to_bodies, unrounded = _to_bodies(model, frames, solved, split, left)
     return Coordinates(
         free=left,
-        to_bodies=_to_bodies(model, frames, solved, split, left),
+        to_bodies=to_bodies,
+        unrounded=unrounded,
         massless=np.array([key in massless for key in left]),
         substitutions=(*split, *dropped),
         centres=frames.centres,
         cluster_of=frames.cluster_of,
-        notes=(*notes, *drop_notes),
+        notes=(*_point_notes(model), *notes, *drop_notes),
     )
 
 
@@ -209,6 +215,18 @@ def _locked_notes(model: Model, solved: Mapping[Freedom, ExactForm], held: Itera
     ]
 
 
+def _point_notes(model: Model) -> list[str]:
+    if model.motion not in (Motion.PLANE, Motion.SPACE):
+        return []
+    return [
+        f"{shown_name(body)}: no inertia is given; taken as a point mass"
+        for body in model.bodies
+        if body.inertia is None
+        and has_inertia(body, "x")
+        and (body.dof is None or any(name in body.dof for name in ROTATIONS))
+    ]
+
+
 def _through(form: Mapping[Freedom, Fraction], solved: Mapping[Freedom, ExactForm]) -> ExactForm:
     parts = ((entry, solved.get(key, {key: Fraction(1)})) for key, entry in form.items())
     return {key: Fraction(entry) for key, entry in combined(parts).items()}
@@ -216,10 +234,9 @@ def _through(form: Mapping[Freedom, Fraction], solved: Mapping[Freedom, ExactFor
 
 def _mass_forms(model: Model, frames: _Frames, solved: Mapping[Freedom, ExactForm]) -> list[ExactForm]:
     return [
-        _through(frames.form((body.id, name)), solved)
+        _through(frames.of(form), solved)
         for body in model.bodies
-        for name in FREEDOMS[model.motion]
-        if has_inertia(body, name)
+        for form in inertia_forms(body, model.motion)
     ]
 
 
@@ -232,7 +249,7 @@ def _massless_directions(
     light = {
         frames.cluster_of[body.id]
         for body in model.bodies
-        if not all(has_inertia(body, name) for name in FREEDOMS[model.motion])
+        if len(inertia_forms(body, model.motion)) < len(FREEDOMS[model.motion])
     }
     split: list[tuple[Freedom, ExactForm]] = []
     groups = Groups(key for key in free if key in touched)
@@ -262,18 +279,18 @@ def _unresisted(
     model: Model,
     frames: _Frames,
     solved: Mapping[Freedom, ExactForm],
-    massless: set[Freedom],
+    massless: Sequence[Freedom],
     split: Sequence[tuple[Freedom, ExactForm]],
 ) -> tuple[list[tuple[Freedom, ExactForm]], list[str]]:
     """Find the massless directions that no stiffness resists; they decouple and are left out."""
     if not massless:
         return [], []
-    forms = []
-    for link in _links_near(model, frames, massless, solved):
+    forms, light = [], set(massless)
+    for link in _links_near(model, frames, light, solved):
         for term in stretches(link, frames.exact):
             if term.family == "stiffness":
                 form = _split_through(_through(frames.of(_fractions(term.form)), solved), split)
-                forms.append({key: entry for key, entry in form.items() if key in massless})
+                forms.append({key: entry for key, entry in form.items() if key in light})
     dropped = []
     groups = Groups(massless)
     for form in forms:
@@ -283,13 +300,19 @@ def _unresisted(
         dropped += null_space([f for f in forms if f and inside.issuperset(f)], members)
     names = {body.id: shown_name(body) for body in model.bodies}
     left_out: dict[str, list[str]] = {}
-    for (part, freedom), _ in dropped:
-        left_out.setdefault(part, []).append(freedom)
+    for (part, freedom), vector in dropped:
+        left_out.setdefault(part, []).append(_direction(freedom, vector))
     notes = [
         f"{names[part]}: its motion {', '.join(sorted(freedoms))} has no inertia and no resistance; left out"
         for part, freedoms in left_out.items()
     ]
     return dropped, notes
+
+
+def _direction(freedom: str, vector: ExactForm) -> str:
+    """Name a direction; one that several freedoms share lies between them."""
+    shared = sorted({name for _, name in vector})
+    return freedom if len(shared) == 1 else f"in a direction between {' and '.join(shared)}"
 
 
 def _fractions(form: Mapping[Freedom, float | Fraction]) -> ExactForm:
@@ -314,9 +337,10 @@ def _to_bodies(
     solved: Mapping[Freedom, ExactForm],
     split: Sequence[tuple[Freedom, ExactForm]],
     left: Sequence[Freedom],
-) -> sp.csr_array:
+) -> tuple[sp.csr_array, dict[tuple[int, int], Fraction]]:
     column = {key: place for place, key in enumerate(left)}
     rows, cols, entries = [], [], []
+    unrounded = {}
     names = FREEDOMS[model.motion]
     for row, (body, name) in enumerate((b, f) for b in model.bodies for f in names):
         form = _split_through(_through(frames.form((body.id, name)), solved), split)
@@ -325,5 +349,7 @@ def _to_bodies(
                 rows.append(row)
                 cols.append(column[key])
                 entries.append(float(entry))
+                if float(entry) != entry:
+                    unrounded[row, column[key]] = entry
     shape = (len(model.bodies) * len(names), len(left))
-    return sp.csr_array((entries, (rows, cols)), shape=shape, dtype=float)
+    return sp.csr_array((entries, (rows, cols)), shape=shape, dtype=float), unrounded

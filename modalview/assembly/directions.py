@@ -8,11 +8,14 @@ from modalview.model.parts import Axes, Direction
 from modalview.units.parse import read
 from modalview.units.quantities import ANGLE
 
+# The cosine of 90 degrees comes out as 6e-17: components this small are meant to be zero.
+ROUNDING = 1e-15
+
 
 def direction_vector(direction: Direction, places: Places) -> Vector:
     """Return a direction as a vector, not of unit length.
 
-    "x", "-y" and components stay exact; "30 deg" (from +x towards +y) is rounded to stored doubles.
+    "x", "-y" and components stay exact; "30 deg" (from +x towards +y) is rounded, multiples of 90 are not.
     "rx" of a torque is the axis it turns about.
     """
     if not isinstance(direction, str):
@@ -23,7 +26,8 @@ def direction_vector(direction: Direction, places: Places) -> Vector:
         x, y, z = AXES[axis.removeprefix("r")]
         return (sign * x, sign * y, sign * z)
     angle = read(name, ANGLE)
-    return places.vector((math.cos(angle), math.sin(angle)))
+    x, y = (0.0 if abs(c) < ROUNDING else c for c in (math.cos(angle), math.sin(angle)))
+    return places.vector((x, y))
 
 
 def length(vector: Sequence[Number]) -> float:

@@ -1,7 +1,8 @@
 """Motion of points as linear forms in the freedoms of bodies and supports.
 
 Everything here works on any number type: with floats it gives the rows of the model, with
-fractions the same rows exactly, for ranks.
+fractions the same rows exactly, for ranks. Exact means as typed: "0.3 m" is 3/10, not the double
+nearest to it, so that three points on one line stay on one line.
 """
 
 from collections.abc import Iterable, Mapping, Sequence
@@ -19,6 +20,22 @@ Form = dict[Freedom, Number]
 TRANSLATIONS = ("x", "y", "z")
 ROTATIONS = ("rx", "ry", "rz")
 AXES: dict[str, Vector] = {"x": (1, 0, 0), "y": (0, 1, 0), "z": (0, 0, 1)}
+
+
+# A double holds every decimal of so many digits; what was typed comes back from it unharmed, also through
+# the rounding of a change of unit.
+DIGITS = 15
+
+
+def as_typed(value: float) -> Fraction:
+    """Return the decimal number that was typed to give this double.
+
+    Examples
+    --------
+    >>> as_typed(0.3), as_typed(3 * 0.1)
+    (Fraction(3, 10), Fraction(3, 10))
+    """
+    return Fraction(f"{value:.{DIGITS}g}")
 
 
 def combined(forms: Iterable[tuple[Number, Mapping[Freedom, Number]]]) -> Form:
@@ -53,7 +70,7 @@ def midpoint(a: Sequence[Number], b: Sequence[Number]) -> Vector:
 
 @dataclass(frozen=True, slots=True)
 class Places:
-    """Where bodies and supports are, in floats or in fractions of the stored doubles.
+    """Where bodies and supports are, in floats or in fractions as typed.
 
     Parameters
     ----------
@@ -72,8 +89,8 @@ class Places:
     exact: bool
 
     def number(self, value: float) -> Number:
-        """Take a stored double over, as a fraction where this is exact."""
-        return Fraction(value) if self.exact else value
+        """Take a typed number over, as a fraction where this is exact."""
+        return as_typed(value) if self.exact else value
 
     def vector(self, components: Sequence[float]) -> Vector:
         """Take two or three components over."""
@@ -108,7 +125,7 @@ class Places:
 
 def places(model: Model, *, exact: bool = False) -> Places:
     """Read off where everything is; without a position (single axis, shaft train) that is the origin."""
-    number = Fraction if exact else float
+    number = as_typed if exact else float
     zero = (number(0), number(0), number(0))
 
     def place(position: Sequence[float] | None) -> Vector:

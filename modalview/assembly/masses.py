@@ -1,12 +1,17 @@
 """Mass terms of a body: what inertia takes part in which freedom."""
 
+from fractions import Fraction
+
 import numpy as np
 import numpy.typing as npt
 
 from modalview.assembly.parameters import Parameter, inertia_scale, parameter
-from modalview.model.parts import Body, DefaultTolerance, InertiaTensor, Motion
+from modalview.model.parts import FREEDOMS, Body, DefaultTolerance, InertiaTensor, Motion
 
 ROTATION_ENTRIES = ("Ixx", "Iyy", "Izz")
+# A principal moment below this share of the largest is zero: a thin rod, its tensor typed with rounded
+# numbers. The rules of the model let tensors through that miss being possible by as much.
+NO_MOMENT = 1e-9
 
 
 def has_inertia(body: Body, freedom: str) -> bool:
@@ -32,7 +37,7 @@ def tensor_matrix(tensor: InertiaTensor) -> npt.NDArray[np.float64]:
 
 
 def principal_terms(tensor: InertiaTensor) -> list[tuple[float, tuple[float, float, float]]]:
-    """Return the principal moments with their axes: J = sum J_i q_i q_i^T."""
+    """Return the principal moments above zero with their axes: J = sum J_i q_i q_i^T."""
     matrix = tensor_matrix(tensor)
     if not np.any(matrix - np.diag(np.diag(matrix))):
         units = ((1.0, 0.0, 0.0), (0.0, 1.0, 0.0), (0.0, 0.0, 1.0))
@@ -41,7 +46,33 @@ def principal_terms(tensor: InertiaTensor) -> list[tuple[float, tuple[float, flo
     return [
         (float(moment), (float(axis[0]), float(axis[1]), float(axis[2])))
         for moment, axis in zip(moments, axes.T, strict=True)
+        if moment > NO_MOMENT * moments[-1]
     ]
+
+
+def inertia_forms(body: Body, motion: Motion) -> list[dict[tuple[str, str], Fraction]]:
+    """Return the directions of a body that inertia takes part in, as forms in its freedoms.
+
+    Single freedoms, but for a tensor with a principal moment of zero (a thin rod askew): there the
+    principal axes that have one.
+    """
+    names = [name for name in FREEDOMS[motion] if has_inertia(body, name)]
+    if isinstance(body.inertia, InertiaTensor):
+        turns = principal_terms(body.inertia)
+        if len(turns) < sum(name.startswith("r") for name in names):
+            shifts = [name for name in names if not name.startswith("r")]
+            return [
+                *({(body.id, name): Fraction(1)} for name in shifts),
+                *(
+                    {
+                        (body.id, name): Fraction(a)
+                        for name, a in zip(("rx", "ry", "rz"), axis, strict=True)
+                        if a
+                    }
+                    for _, axis in turns
+                ),
+            ]
+    return [{(body.id, name): Fraction(1)} for name in names]
 
 
 def mass_parameters(body: Body, default: DefaultTolerance | None, motion: Motion) -> list[Parameter]:

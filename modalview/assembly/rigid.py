@@ -41,7 +41,7 @@ def rigid_body_motions(model: Model, coordinates: Coordinates, rows: sp.csr_arra
     -----
     The pieces that touch no support give candidates by construction. If the rows leave nothing else
     (smallest eigenvalue clearly positive, Weyl's inequality) these are all. Otherwise the exact rank
-    of the rows decides, computed over a prime field from the stored numbers.
+    of the rows decides, computed over a prime field from the numbers as typed.
     """
     n = rows.shape[1]
     known = _free_pieces(model, coordinates)
@@ -107,7 +107,7 @@ def _holds(motion: Motion, dof: Sequence[str]) -> bool:
 def _piece_motions(
     motion: Motion, coordinates: Coordinates, piece: Sequence[str], ratios: dict[str, float]
 ) -> list[Array]:
-    roots = {coordinates.cluster_of[body] for body in piece}
+    roots = dict.fromkeys(coordinates.cluster_of[body] for body in piece)
     centres = {root: [float(c) for c in coordinates.centres[root]] for root in roots}
     origin = next(iter(centres.values()))
     found = []
@@ -131,7 +131,7 @@ def _independent(columns: Array) -> Array:
 
 
 def exact_rank(model: Model, coordinates: Coordinates) -> int:
-    """Return the rank of the stiffness rows from the stored numbers, over a large prime field."""
+    """Return the rank of the stiffness rows from the numbers as typed, over a large prime field."""
     exact = places(model, exact=True)
     basis = _exact_columns(coordinates, model)
     solved: dict[int, dict[int, int]] = {}
@@ -149,7 +149,7 @@ def _exact_columns(coordinates: Coordinates, model: Model) -> dict[tuple[str, st
     keys = [(body.id, name) for body in model.bodies for name in names]
     return {
         key: {
-            int(column): _residue(Fraction(float(entry)))
+            int(column): _residue(coordinates.unrounded.get((i, int(column)), Fraction(float(entry))))
             for column, entry in zip(
                 table.indices[table.indptr[i] : table.indptr[i + 1]],
                 table.data[table.indptr[i] : table.indptr[i + 1]],

@@ -49,6 +49,7 @@ def body_bones(body: Body, motion: Motion, *, weigh: bool) -> tuple[Any, ...]:
         body.name,
         _numbers(body.position),
         body.dof,
+        inertia is None,
         tuple(has_inertia(body, name) for name in FREEDOMS[motion]),
         body.mass.si if weigh and body.mass else None,
         # Principal moments enter the rows' factors, so any tensor is part of the structure.

@@ -149,12 +149,16 @@ def gear_ratio(link: Gear) -> Fraction:
     return Fraction(str(link.ratio))
 
 
+def _ratio(link: Gear, places: Places) -> Number:
+    return gear_ratio(link) if places.exact else float(gear_ratio(link))
+
+
 def _gear(link: Gear, places: Places) -> Iterator[Stretch]:
     if link.stiffness is None or link.pitch_radius is None:
         return
     axis = rotation_axis(link, places)
     radius = places.number(link.pitch_radius.from_.si)
-    other = radius / places.number(float(gear_ratio(link)))
+    other = radius / _ratio(link, places)
     start, end = places.part(link.from_), places.part(link.to)
     form = combined(((radius, places.turns(start, axis)), (-other, places.turns(end, axis))))
     yield Stretch("stiffness", form, length(axis), ("stiffness",))
@@ -249,7 +253,7 @@ def exact_joints(link: Link, places: Places) -> list[Form]:
     freedoms = FREEDOMS[places.motion]
     if isinstance(link, Gear) and link.stiffness is None:
         axis = rotation_axis(link, places)
-        ratio = gear_ratio(link) if places.exact else float(gear_ratio(link))
+        ratio = _ratio(link, places)
         start, end = places.part(link.from_), places.part(link.to)
         return [combined(((1, places.turns(end, axis)), (-ratio, places.turns(start, axis))))]
     if isinstance(link, RigidLink) and link.directions is not None:
