@@ -1,0 +1,64 @@
+"""README.md says what is so: its output is the program's, its commands are there, its file opens."""
+
+import json
+import re
+import textwrap
+import tomllib
+from pathlib import Path
+
+import pytest
+
+from modalview.__main__ import main
+
+ROOT = Path(__file__).resolve().parents[2]
+README = (ROOT / "README.md").read_text(encoding="utf-8")
+BLOCKS = [
+    textwrap.dedent(block).strip() for block in re.findall(r"(?:^(?: {4}.*)?\n)+", README, re.MULTILINE)
+]
+SHOWN = [block for block in BLOCKS if block.startswith("$ keepclear ")]
+
+
+def test_readme_shows_output():
+    assert [block.split()[2] for block in SHOWN] == ["check", "bounds", "modes"]
+
+
+@pytest.mark.parametrize("block", SHOWN, ids=lambda block: block.split()[2])
+def test_output_is_what_the_program_prints(block, capsys, monkeypatch):
+    command, _, output = block.partition("\n")
+    monkeypatch.chdir(ROOT)
+    status = main(command.split()[2:])
+    assert capsys.readouterr().out.strip() == output.strip()
+    assert status == (1 if "check" in command else 0)
+
+
+def test_file_of_the_readme_opens_and_is_checked(tmp_path, capsys):
+    (text,) = (block for block in BLOCKS if block.startswith("{"))
+    assert json.loads(text)["format"] == "keepclear"
+    (tmp_path / "fan.keepclear").write_text(text, encoding="utf-8")
+    assert main(["check", str(tmp_path / "fan.keepclear")]) == 0
+    assert "Not checked" in capsys.readouterr().out
+
+
+def test_what_the_readme_names_is_there():
+    named = re.findall(
+        r"\]\(([^)#]+)\)|(?<=sh )(\.ci/[\w-]+)|`(resources/\S+|tests/data\S*|\w+\.md)`", README
+    )
+    files = {name for found in named for name in found if name}
+    assert {".ci/first-look", "resources/readme-window.png", "DEVELOPERS.md"} <= files
+    assert [name for name in files if not (ROOT / name).exists()] == []
+
+
+def test_what_developers_md_names_is_there():
+    text = (ROOT / "DEVELOPERS.md").read_text(encoding="utf-8")
+    named = set(re.findall(r"`((?:modalview|tests|resources|demo_models|\.ci)/[\w./-]+)`", text))
+    mapped = {"modalview/_resources", "modalview/_demo_models"}  # in the wheel only
+    assert len(named) > 40
+    assert sorted(name for name in named - mapped if not (ROOT / name).exists()) == []
+
+
+def test_layers_of_developers_md_are_those_that_are_checked():
+    text = (ROOT / "DEVELOPERS.md").read_text(encoding="utf-8")
+    project = tomllib.loads((ROOT / "pyproject.toml").read_text(encoding="utf-8"))
+    layers = project["tool"]["importlinter"]["contracts"][0]["layers"]
+    (shown,) = (block for block in re.findall(r"(?:^ {4}.*\n)+", text, re.MULTILINE) if "__main__ " in block)
+    assert [re.split(r"\s{2,}", line.strip())[0] for line in shown.splitlines()] == layers
