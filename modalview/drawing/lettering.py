@@ -114,9 +114,10 @@ def _foot_boxes(geometry: SheetGeometry) -> Floats:
 
 
 def _name_bodies(geometry: SheetGeometry, board: Board, inner: Board, letters: _Letters) -> None:
+    many = len(geometry.model.bodies) > MOST_LABELS  # names alone then, and only where they fit inside
     for number, body in enumerate(geometry.model.bodies):
         name, *values = body_lines(geometry.model, body)
-        if len(geometry.model.bodies) > MOST_LABELS:
+        if many:
             values = []
         lines = (Line(name, bold=True), *(Line(text, Role.MUTED) for text in values))
         x1, y1, x2, y2 = geometry.fronts[number].tolist()
@@ -124,7 +125,7 @@ def _name_bodies(geometry: SheetGeometry, board: Board, inner: Board, letters: _
         placed = inner.place(lines, _inside(within, board.size(lines)), within=within)
         if not placed and geometry.train is not None:
             placed = board.place(lines, _by_disc(geometry, number))
-        if not placed and values:
+        if not placed and not many:
             box = geometry.boxes[number]
             far = ring_about(*((box[:2] + box[2:]) / 2).tolist())
             placed = board.place(lines, round_about(_rectangle(box), 12.0) + far)

@@ -79,6 +79,14 @@ def _segments(geometry: SheetGeometry) -> int:
     return sum(len(item.segments) for item in items if isinstance(item, Lines))
 
 
+def test_a_massless_junction_is_named_beside_its_point(plane_model: Model):
+    geometry = sheet_geometry(plane_model, 720, 540)
+    (label,) = (text for body, text in geometry.body_labels if body == 2)
+    assert label.text == "j"
+    x1, _, x2, _ = geometry.boxes[2]
+    assert x2 - x1 < 15
+
+
 def test_springs_end_on_their_bodies(tower_model: Model):
     geometry = sheet_geometry(tower_model, 720, 540)
     for ends, pair in zip(geometry.link_ends, geometry.link_bodies, strict=True):
