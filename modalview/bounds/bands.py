@@ -82,10 +82,11 @@ class BandCount:
         return self._nominal("at most")
 
     def _nominal(self, side: str) -> int | None:
-        # Where no mode is possible, N_stiff(lo) <= N(lo) <= N(hi) <= N_soft(hi) are all one number.
+        # Where no mode is possible, N_stiff(lo) <= N(lo) <= N(hi) <= N_soft(hi) are all one number. The last
+        # nominal count is that of the nominal band; one before it may be of the tolerance band.
         same = [e.count.number for e in self.evidence if e.side == side]
         own = [e.count.number for e in self.evidence if e.side == side and e.case == "nominal"]
-        return (own or same)[0]
+        return (own or same)[-1]
 
     @property
     def undecided(self) -> tuple[str, ...]:

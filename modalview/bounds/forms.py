@@ -64,14 +64,26 @@ def forms_of(pencil: Pencil) -> Forms:
     share = gamma(terms + 2 * entries + 12) + 2 * _defect(pencil)
     if pencil.massless.any():
         share += (pencil.n * UNIT / max(pencil.shifted.extents.margin, UNIT)) ** 2
-    if pencil.modes > DENSE:
+    return Forms(*_products(pencil), share)
+
+
+def _products(pencil: Pencil) -> tuple[Matrix, Matrix]:
+    """S and |W|.T formation |W|."""
+    basis, dense = pencil.basis, pencil.modes <= DENSE
+    if mass_is_diagonal(pencil) and not pencil.massless.any():
+        root = 1 / np.sqrt(pencil.M.diagonal())
+        K, formation = pencil.K, pencil.formation
+        if dense:
+            return scaled(K.toarray(), root, root), scaled(formation.toarray(), root, root)
+        return scaled(K, root, root), scaled(formation, root, root)
+    if not dense:
         absolute = abs(basis)
         spread = sp.csr_array(absolute.T @ (pencil.formation @ absolute))
-        return Forms(sp.csr_array(pencil.standard), spread, share)
+        return sp.csr_array(pencil.standard), spread
     W = basis.toarray()
     half = W.T @ (pencil.K @ W)
     size = np.abs(W)
-    return Forms((half + half.T) / 2, size.T @ (pencil.formation @ size), share)
+    return (half + half.T) / 2, size.T @ (pencil.formation @ size)
 
 
 def scaled(matrix: Matrix, left: Array, right: Array) -> Matrix:

@@ -14,9 +14,10 @@ from modalview.factor.shifted import ShiftedPencil
 
 Array = npt.NDArray[np.float64]
 
-# Up to this size the trace of the flexibility is formed densely (0.1 s at the limit); beyond, a ladder of
-# counts below the upper bound proves the lower one with one or two factorizations.
-DENSE_TRACE = 1000
+# Up to this size the trace of the flexibility is formed densely (10 ms at the limit, growing with the cube);
+# beyond, a ladder of counts below the upper bound proves the lower one by one or two factorizations, and
+# usually a sharper one.
+DENSE_TRACE = 500
 
 # Heaviest directions whose unit accelerations are tried beside the rigid ones (design: 12).
 HEAVIEST = 12

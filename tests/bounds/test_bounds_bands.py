@@ -74,6 +74,7 @@ def test_the_speed_tolerance_widens_only_what_is_possible():
     one = pencil().shifted
     counted = count_band(Cases(one, one, one), (15.0, 17.0), (14.0, 17.0))
     assert (counted.inside, counted.possible, counted.certain) == (0, 1, 0)
+    assert (counted.below, counted.upto) == (1, 1)
 
 
 def test_a_mode_on_the_very_edge_is_inside():
