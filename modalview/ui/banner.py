@@ -2,13 +2,14 @@
 
 from typing import Any
 
-from PySide6.QtCore import Qt, Signal
+from PySide6.QtCore import Qt, QTimer, Signal
 from PySide6.QtWidgets import QFrame, QHBoxLayout, QLabel, QProgressBar, QPushButton, QSizePolicy, QWidget
 
 from modalview.ui.analysis import Analysis
 from modalview.ui.symbols import VerdictSign
 from modalview.ui.theme import LIGHT, Theme
 
+_BLINK_MS = 250
 _WORDS = {
     "clear": "Clear",
     "clear at nominal only": "Clear at nominal only",
@@ -45,7 +46,11 @@ class Banner(QFrame):
         self.find.setObjectName("findModes")
         self.find.setToolTip("Find every mode of the model (Ctrl+Enter)")
         self.find.clicked.connect(self.find_asked)
+        # A search that is over in a blink shows no progress: it would only flicker.
+        self._patience = QTimer(self, interval=_BLINK_MS, singleShot=True)
+        self._patience.timeout.connect(lambda: self._show_progress(shown=True))
         self._lay_out()
+        self._show_progress(shown=False)
 
     def _lay_out(self) -> None:
         layout = QHBoxLayout(self)
@@ -72,20 +77,33 @@ class Banner(QFrame):
         self.sign.setVisible(bool(sentence))
         self.word.setProperty("verdict", verdict or "none")
         self.word.style().polish(self.word)
+        self._keep_height(settled=not (analysis.looking or analysis.finding))
         self.sentence.setText(sentence)
         self.show_busy(analysis)
+
+    def _keep_height(self, *, settled: bool) -> None:
+        """Let the banner grow but not shrink while a study goes on, so that the sheet below stands still."""
+        lines = 2 * self.sentence.fontMetrics().lineSpacing()
+        self.sentence.setMinimumHeight(lines if settled else max(lines, self.sentence.height()))
 
     def show_busy(self, analysis: Analysis) -> None:
         """Show progress and Cancel while the modes are being found, the button otherwise."""
         what, share = analysis.progress
-        self.progress.setVisible(analysis.finding)
-        self.cancel.setVisible(analysis.finding)
-        self.find.setVisible(not analysis.finding)
+        if not analysis.finding:
+            self._patience.stop()
+            self._show_progress(shown=False)
+        elif self.cancel.isHidden() and not self._patience.isActive():
+            self._patience.start()
         self.find.setEnabled(analysis.outlook is not None)
         self.progress.setRange(0, 100 if share > 0 else 0)
         self.progress.setValue(round(100 * share))
         self.progress.setFormat(what or "finding modes")
         self.progress.setToolTip(what)
+
+    def _show_progress(self, *, shown: bool) -> None:
+        self.progress.setVisible(shown)
+        self.cancel.setVisible(shown)
+        self.find.setVisible(not shown)
 
 
 def _said(analysis: Analysis) -> tuple[str | None, str, str]:

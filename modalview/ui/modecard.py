@@ -31,9 +31,9 @@ class ModeCard(QStyledItemDelegate):
         self._model: Model | None = None
         self._room, self._height = 0, 190
         self.factor = 1.0  # where the small pictures stand in their swing, -1..1
-        self._small: Any = None
-        self._small_size = (0, 0)
-        self._posed: dict[int, Any] = {}
+        # By size in pixels: cards with a longer name or fewer shares leave their picture another height.
+        self._small: dict[tuple[int, int], Any] = {}
+        self._posed: dict[tuple[int, tuple[int, int]], Any] = {}
 
     def set_theme(self, theme: Theme) -> None:
         """Paint in other colours from now on."""
@@ -41,8 +41,9 @@ class ModeCard(QStyledItemDelegate):
 
     def set_model(self, model: Model | None) -> None:
         """Draw the small pictures of another model."""
-        self._model, self._small = model, None
-        self._posed = {}
+        self._model = model
+        self._small.clear()
+        self._posed.clear()
 
     def set_room(self, width: int, height: int) -> None:
         """Make the cards as tall as the list; few of them share its width."""
@@ -151,14 +152,14 @@ class ModeCard(QStyledItemDelegate):
         from modalview.drawing import modepicture, motion  # noqa: PLC0415  (numpy comes after the first paint)
 
         size = (round(place.width()), round(place.height()))
-        if self._small is None or size != self._small_size:
-            self._small = modepicture.mode_geometry(self._model, *size)
-            self._small_size, self._posed = size, {}
-        posed = self._posed.get(mode.number)
+        small = self._small.get(size)
+        if small is None:
+            small = self._small[size] = modepicture.mode_geometry(self._model, *size)
+        posed = self._posed.get((mode.number, size))
         if posed is None:
-            posed = self._posed[mode.number] = motion.pose(self._small, mode.motion)
+            posed = self._posed[mode.number, size] = motion.pose(small, mode.motion)
         painter.translate(place.topLeft())
-        paint_drawing(painter, modepicture.mode_picture(self._small, posed, self.factor), self._theme)
+        paint_drawing(painter, modepicture.mode_picture(small, posed, self.factor), self._theme)
         painter.translate(-place.topLeft())
 
     @staticmethod

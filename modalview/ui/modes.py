@@ -133,9 +133,12 @@ class Modes(QWidget):
     def _show_found(self, solution: Any) -> None:
         row = max(self.row.currentIndex().row(), 0)
         self.row.card.set_model(_model_of(solution))
+        silent = self.row.blockSignals(True)  # not every step of the exchange is a choice
         self.row.modes.show_solution(solution, current=True)
-        self.row.fit_cards()
         self.row.choose(min(row, len(solution.modes) - 1))
+        self.row.blockSignals(silent)
+        self.row.fit_cards()
+        self.mode_chosen.emit(self.row.chosen())
 
 
 def _model_of(solution: Any) -> Model:

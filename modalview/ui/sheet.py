@@ -1,6 +1,7 @@
 """The sheet: the model as an engineering drawing, on which the chosen mode moves."""
 
 import math
+from dataclasses import replace
 from typing import Any
 
 from PySide6.QtCore import QElapsedTimer, QPoint, QPointF, Qt, QTimer, Signal
@@ -55,7 +56,10 @@ class Sheet(QWidget):
         """Draw a model; ``fit`` drops the zoom that was chosen for another one."""
         from modalview.drawing import furniture  # noqa: PLC0415  (numpy comes after the first paint)
 
-        self._model, self._title = model, furniture.title_lines(model)
+        title = furniture.title_lines(model)
+        if not fit and self._title is not None:  # what was checked is told anew when it is counted anew
+            title = replace(title, checked=self._title.checked, motion=self._title.motion)
+        self._model, self._title = model, title
         if fit:
             self._view = None
             self._selected = None
@@ -69,9 +73,9 @@ class Sheet(QWidget):
 
     def show_mode(self, mode: Any) -> None:
         """Let a mode (study.FoundMode) move on the sheet; None shows the model at rest."""
-        self._mode = mode
-        self._phase_s = 0.0
-        self._rebuild()
+        if mode is not self._mode:
+            self._mode = mode
+            self._pose()
 
     def set_theme(self, theme: Theme, text_scale: float) -> None:
         """Repaint in other colours and text size."""
@@ -117,15 +121,21 @@ class Sheet(QWidget):
     # Building
 
     def _rebuild(self) -> None:
-        from modalview.drawing import motion, sheet  # noqa: PLC0415  (numpy comes after the first paint)
+        if self._model is None:
+            return
+        from modalview.drawing import sheet  # noqa: PLC0415  (numpy comes after the first paint)
 
+        self._geometry = sheet.sheet_geometry(
+            self._model, self.width(), self.height(), text_scale=self._text_scale, view=self._view
+        )
+        self._pose()
+
+    def _pose(self) -> None:
         self._rest = self._posed = None
-        if self._model is not None and self.width() > 0:
-            self._geometry = sheet.sheet_geometry(
-                self._model, self.width(), self.height(), text_scale=self._text_scale, view=self._view
-            )
-            if self._mode is not None:
-                self._posed = motion.pose(self._geometry, self._mode.motion)
+        if self._mode is not None and self._geometry is not None:
+            from modalview.drawing import motion  # noqa: PLC0415  (see above)
+
+            self._posed = motion.pose(self._geometry, self._mode.motion)
         self._run()
         self.update()
 

@@ -269,7 +269,8 @@ class Window(QMainWindow):
         if outlook is not None:
             self._show_title(str(outlook.verdict or "nothing to check"), outlook.assembly.pencil().n)
         self.banner.show_analysis(self.analysis)
-        self.modes.show_analysis(self.analysis)
+        if self.analysis.solution is None:
+            self.modes.show_analysis(self.analysis)
         self.results.show_results()
         self.status.show_state(self.document, self.analysis)
 
