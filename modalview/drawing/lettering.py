@@ -223,7 +223,7 @@ def _name_alike(
 ) -> None:
     """Write the values of links that share them once, at the first with room for it."""
     kind = geometry.model.links[group[0]].kind
-    lines = _link_label(f"{len(group)} alike: each {kind}", values)
+    lines = _link_label(f"each of {len(group)} {kind}s", values)
     for number in group:
         if _placed_beside(geometry, board, letters, number, lines):
             return

@@ -28,7 +28,6 @@ class Size(StrEnum):
 
     SMALL = "small"
     NORMAL = "normal"
-    LARGE = "large"
 
 
 class Anchor(StrEnum):

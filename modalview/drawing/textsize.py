@@ -3,7 +3,7 @@
 from modalview.drawing.primitives import Size
 
 # Height of the font's em square in pixels at text scale 1.
-PIXELS: dict[Size, float] = {Size.SMALL: 11.0, Size.NORMAL: 13.0, Size.LARGE: 15.0}
+PIXELS: dict[Size, float] = {Size.SMALL: 11.0, Size.NORMAL: 13.0}
 LINE_HEIGHT = 1.3  # of the em, from line to line
 BOLD = 1.12  # width of bold over regular
 
