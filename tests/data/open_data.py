@@ -67,7 +67,7 @@ def read(name: str) -> OpenSet:
 
 def matrix(path: Path) -> sp.csc_array:
     """Read a Matrix Market file, gzipped or not, with both triangles."""
-    return sp.csc_array(sp.coo_array(scipy.io.mmread(path)).astype(float))
+    return sp.csc_array(sp.coo_array(scipy.io.mmread(path, spmatrix=False)).astype(float))
 
 
 def mikota_terms(name: str) -> Pencil:

@@ -162,7 +162,9 @@ def test_a_block_of_mass_counts_like_the_standard_form():
     rng = np.random.default_rng(4)
     n = 12
     root = rng.normal(size=(n, n))
-    mass = sp.csc_array(sp.block_diag([root[:6, :6] @ root[:6, :6].T + np.eye(6), np.diag([3.0] * 6)]))
+    mass = sp.csc_array(
+        sp.block_diag([sp.coo_array(root[:6, :6] @ root[:6, :6].T + np.eye(6)), 3.0 * sp.eye_array(6)])
+    )
     stretch = rng.normal(size=(20, n))
     K = sp.csc_array(stretch.T @ np.diag(10 ** rng.uniform(3, 6, 20)) @ stretch)
     pencil = pencil_of_matrices((K + K.T) / 2, (mass + mass.T) / 2)

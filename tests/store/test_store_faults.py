@@ -456,7 +456,7 @@ def test_a_value_that_cannot_be_read_is_not_missed_again_by_the_rules():
         ("", "", "the file is empty"),
         (" \n", "", "the file is empty"),
         ("{", "line 1, column 2", "not JSON"),
-        ('{\n"a": 1,\n}', "line 3, column 1", "not JSON"),
+        ('{\n"a": 1 2}', "line 2, column 8", "not JSON"),
         ("[]", "", "one JSON object"),
         ("7", "", "one JSON object"),
         ("{}", "format", "missing"),
