@@ -1,0 +1,94 @@
+"""Windows without a screen, with fresh settings; Qt warnings and leftover threads fail."""
+
+import os
+
+os.environ["QT_QPA_PLATFORM"] = "offscreen"
+
+from pathlib import Path
+
+import pytest
+from PySide6.QtCore import QSettings, QThread, QtMsgType
+from PySide6.QtWidgets import QApplication
+
+from modalview.places import demo_models
+from modalview.ui import settings as names
+from modalview.ui.settings import Settings
+from modalview.ui.studydoor import load_study
+from modalview.ui.window import Window
+from modalview.ui.worker import Worker
+
+PUMP = demo_models() / "1-cooling-water-pump" / "as-built.keepclear"
+FAN = demo_models() / "2-supply-fan" / "steel-legs.keepclear"
+# What the offscreen platform says of itself, not of the program.
+NOT_OURS = ("This plugin does not support propagateSizeHints()",)
+
+
+@pytest.fixture(scope="session", autouse=True)
+def _study_loaded():
+    """Import numpy and scipy once, outside of any test's time."""
+    load_study()
+
+
+@pytest.fixture(autouse=True)
+def _quiet_and_tidy(qtlog):
+    yield
+    warned = [
+        record.message
+        for record in qtlog.records
+        if record.type not in (QtMsgType.QtDebugMsg, QtMsgType.QtInfoMsg) and record.message not in NOT_OURS
+    ]
+    assert not warned
+    application = QApplication.instance()
+    if application is not None:
+        assert [one for one in application.topLevelWidgets() if one.isVisible()] == []
+
+
+@pytest.fixture
+def settings(tmp_path: Path) -> Settings:
+    kept = Settings(QSettings(str(tmp_path / "settings.ini"), QSettings.Format.IniFormat))
+    kept.set(names.MOVE, False)
+    kept.set(names.THEME, "light")
+    return kept
+
+
+@pytest.fixture
+def make_window(qtbot, settings):
+    """Return a function that opens windows; they are closed and their threads have ended afterwards."""
+    made = []
+
+    def make(load=load_study) -> Window:
+        worker = Worker(load=load)
+        window = Window(settings, worker)
+        made.append((window, worker))
+        window.show()
+        window.start_worker()
+        return window
+
+    yield make
+    for window, worker in made:
+        window.document.stack.setClean()
+        window.close()
+        window.deleteLater()
+        assert worker._thread.isFinished()
+    QApplication.processEvents()
+
+
+@pytest.fixture
+def window(make_window) -> Window:
+    return make_window()
+
+
+@pytest.fixture
+def pump(window, qtbot) -> Window:
+    """The window with demonstration model 1, its modes found."""
+    window.document.open(PUMP, example=True)
+    settle(qtbot, window)
+    return window
+
+
+def settle(qtbot, window: Window) -> None:
+    """Let the study of the model on the sheet come to its end."""
+    analysis = window.analysis
+    qtbot.waitUntil(lambda: not analysis.looking and not analysis.finding, timeout=5000)
+    if analysis.automatic and analysis.refusal is None:
+        qtbot.waitUntil(lambda: analysis.solution_current, timeout=5000)

@@ -1,0 +1,150 @@
+"""The worker and what the window keeps of its answers, with a study that waits to be told."""
+
+from threading import Event
+from types import SimpleNamespace
+
+import pytest
+
+from modalview.errors import CancelledError, ModelFaultsError
+from modalview.errors import Fault as OneFault
+from modalview.model.parts import Model
+from modalview.ui.analysis import Analysis
+from modalview.ui.studydoor import Study
+from modalview.ui.worker import Find, Step, Worker
+
+FIRST, SECOND = Model(title="first"), Model(title="second")
+
+
+class Bench:
+    """A study whose solve waits for ``go`` and whose models can be told to fail."""
+
+    def __init__(self) -> None:
+        self.go, self.solving = Event(), Event()
+        self.error: Exception | None = None
+        self.coordinates = 3
+
+    def request(self, model, **more):
+        return SimpleNamespace(model=model, **more)
+
+    def look(self, request, previous):
+        del previous
+        if self.error is not None:
+            raise self.error
+        pencil = SimpleNamespace(n=self.coordinates)
+        return SimpleNamespace(request=request, assembly=SimpleNamespace(pencil=lambda: pencil))
+
+    def solve(self, request, outlook):
+        self.solving.set()
+        request.progress("halfway", 0.5)
+        while not self.go.wait(0.002):
+            if request.cancelled():
+                raise CancelledError("stopped")
+        return SimpleNamespace(outlook=outlook, modes=())
+
+
+@pytest.fixture
+def bench():
+    return Bench()
+
+
+@pytest.fixture
+def worker(qtbot, bench):
+    made = Worker(load=lambda: Study(bench.request, bench.look, bench.solve))
+    made.start()
+    yield made
+    made.close()
+    assert made._thread.isFinished()
+
+
+@pytest.fixture
+def answers(worker):
+    kept = []
+    worker.answered.connect(kept.append)
+    return kept
+
+
+def steps(answers):
+    return [answer.step for answer in answers]
+
+
+def test_an_order_is_looked_at_and_a_small_model_solved(worker, bench, answers, qtbot):
+    bench.go.set()
+    worker.order(FIRST, Find.IF_SMALL)
+    qtbot.waitUntil(lambda: Step.SOLVED in steps(answers))
+    assert steps(answers) == [Step.LOOKED, Step.FINDING, Step.PROGRESSED, Step.SOLVED]
+
+
+def test_a_model_that_is_not_small_is_solved_only_when_asked(worker, bench, answers, qtbot):
+    bench.go.set()
+    bench.coordinates = 301
+    worker.order(FIRST, Find.IF_SMALL)
+    qtbot.waitUntil(lambda: Step.LOOKED in steps(answers))
+    worker.order(FIRST, Find.ALWAYS)
+    qtbot.waitUntil(lambda: Step.SOLVED in steps(answers))
+    assert steps(answers).count(Step.FINDING) == 1
+
+
+def test_answers_to_an_older_order_are_dropped_and_its_solve_is_stopped(worker, bench, answers, qtbot):
+    worker.order(FIRST, Find.ALWAYS)
+    qtbot.waitUntil(bench.solving.is_set)
+    worker.order(SECOND, Find.NEVER)
+    qtbot.waitUntil(lambda: answers and answers[-1].number == 2)
+    assert Step.SOLVED not in steps(answers)
+    assert answers[-1].content.request.model is SECOND
+
+
+def test_cancel_stops_the_solve_and_keeps_what_is_known(worker, bench, qtbot):
+    analysis = Analysis(worker)
+    analysis.follow(FIRST)
+    qtbot.waitUntil(bench.solving.is_set)
+    qtbot.waitUntil(lambda: analysis.progress == ("halfway", 0.5))
+    assert analysis.finding
+    analysis.cancel()
+    qtbot.waitUntil(lambda: not analysis.finding)
+    assert analysis.outlook.request.model is FIRST
+    assert analysis.solution is None
+
+
+def test_modes_are_current_only_for_the_model_they_were_found_for(worker, bench, qtbot):
+    bench.go.set()
+    analysis = Analysis(worker)
+    analysis.follow(FIRST)
+    qtbot.waitUntil(lambda: analysis.solution_current)
+    analysis.automatic = False
+    analysis.follow(SECOND)
+    assert analysis.solution is not None
+    assert not analysis.solution_current
+
+
+def test_a_model_that_cannot_be_studied_is_told_and_the_next_one_is_studied(worker, bench, qtbot):
+    analysis = Analysis(worker)
+    bench.error = ModelFaultsError((OneFault("bodies[0]", "hangs in the air"),))
+    analysis.follow(FIRST)
+    qtbot.waitUntil(lambda: analysis.refusal is not None)
+    assert analysis.outlook is None
+    assert not analysis.looking
+    bench.error = None
+    bench.go.set()
+    analysis.follow(SECOND)
+    qtbot.waitUntil(lambda: analysis.solution_current)
+    assert analysis.refusal is None
+
+
+def test_an_error_of_the_program_is_passed_on_and_the_thread_goes_on(worker, bench, qtbot):
+    analysis = Analysis(worker)
+    failures = []
+    analysis.failed.connect(failures.append)
+    bench.error = ZeroDivisionError("a bug")
+    analysis.follow(FIRST)
+    qtbot.waitUntil(lambda: bool(failures))
+    bench.error = None
+    bench.go.set()
+    analysis.follow(SECOND)
+    qtbot.waitUntil(lambda: analysis.solution_current)
+
+
+def test_closing_while_a_solve_runs_ends_the_thread(worker, bench, qtbot):
+    worker.order(FIRST, Find.ALWAYS)
+    qtbot.waitUntil(bench.solving.is_set)
+    worker.close()
+    assert worker._thread.isFinished()
