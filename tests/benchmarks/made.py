@@ -1,62 +1,76 @@
 """Invented models of a given size, for timing only."""
 
 import json
+from typing import Any
 
 import numpy as np
 
 from modalview.model.parts import Model
 from modalview.store import parse_model
 
+CHECKS = [{"id": "1x", "order": 1}, {"id": "2x", "order": 2}, {"id": "12x", "order": 12}]
+
 
 def plane_model(bodies: int = 60, links: int = 150, seed: int = 7) -> Model:
-    """Return a plane model on springs: a skid of many machines, three checks, all with tolerances."""
+    """Return a plane model: rows of bodies on mounts, three checks of a speed range, all with tolerances."""
     rng = np.random.default_rng(seed)
     side = int(np.ceil(np.sqrt(bodies)))
-    places = [(i % side * 1.5, 1 + i // side * 1.2) for i in range(bodies)]
-    parts = ",\n".join(
-        f'{{"id": "b{i}", "mass": "{rng.uniform(50, 900):.1f} kg", "inertia": "{rng.uniform(5, 200):.2f} kg m2",'
-        f' "tolerance": "5 %", "position": ["{x} m", "{y} m"]}}'
-        for i, (x, y) in enumerate(places)
-    )
     pairs = [(i, i + 1) for i in range(bodies - 1)] + [(i, i + side) for i in range(bodies - side)]
-    springs = [
-        _mount(
-            f"k{n}",
-            {"body": f"b{a}", "offset": ["0.2 m", "-0.3 m"]},
-            {"body": f"b{b}", "offset": ["-0.25 m", "0.3 m"]},
-            rng,
-        )
+    feet = range(max(3, links - len(pairs)))
+    between = [
+        _mount(f"k{n}", _end(a, "0.2 m", "-0.3 m"), _end(b, "-0.25 m", "0.3 m"), rng)
         for n, (a, b) in enumerate(pairs)
     ]
-    grounded = max(3, links - len(springs))
-    springs += [
+    below = [
         _mount(
-            f"g{n}",
-            {"body": f"b{n % side}", "offset": [f"{0.1 * (n // side) - 0.2:.2f} m", "-0.4 m"]},
-            {"support": f"s{n}"},
-            rng,
+            f"g{n}", _end(n % side, f"{0.1 * (n // side) - 0.2:.2f} m", "-0.4 m"), {"support": f"s{n}"}, rng
         )
-        for n in range(grounded)
+        for n in feet
     ]
-    supports = ", ".join(
-        f'{{"id": "s{n}", "position": ["{n % side * 1.5 + 0.3 * (n // side)} m", "0 m"]}}'
-        for n in range(grounded)
-    )
-    return parse_model(
-        f'{{"format": "keepclear", "version": 1, "title": "timing", "motion": "plane", "bodies": [{parts}],'
-        f' "supports": [{supports}], "links": [{", ".join(springs)}],'
-        ' "machines": [{"id": "m", "speed": {"from": "600 rpm", "to": "1800 rpm"}, "margin": "10 %", "excitations": ['
-        '{"id": "1x", "order": 1}, {"id": "2x", "order": 2}, {"id": "12x", "order": 12}]}]}'
-    )
+    document = {
+        "format": "keepclear",
+        "version": 1,
+        "title": "timing",
+        "motion": "plane",
+        "bodies": [_body(i, side, rng) for i in range(bodies)],
+        "supports": [
+            {"id": f"s{n}", "position": [f"{1.5 * (n % side) + 0.3 * (n // side):.2f} m", "0 m"]}
+            for n in feet
+        ],
+        "links": [*between, *below],
+        "machines": [
+            {
+                "id": "m",
+                "speed": {"from": "600 rpm", "to": "1800 rpm"},
+                "margin": "10 %",
+                "excitations": CHECKS,
+            }
+        ],
+    }
+    return parse_model(json.dumps(document))
 
 
-def _end(end: dict[str, object]) -> str:
-    return json.dumps(end)
+def _body(i: int, side: int, rng: np.random.Generator) -> dict[str, Any]:
+    return {
+        "id": f"b{i}",
+        "mass": f"{rng.uniform(50, 900):.1f} kg",
+        "inertia": f"{rng.uniform(5, 200):.2f} kg m2",
+        "tolerance": "5 %",
+        "position": [f"{1.5 * (i % side)} m", f"{1 + 1.2 * (i // side):.1f} m"],
+    }
 
 
-def _mount(name: str, start: dict[str, object], end: dict[str, object], rng: np.random.Generator) -> str:
+def _end(body: int, x: str, y: str) -> dict[str, Any]:
+    return {"body": f"b{body}", "offset": [x, y]}
+
+
+def _mount(name: str, start: dict[str, Any], end: dict[str, Any], rng: np.random.Generator) -> dict[str, Any]:
     stiffness = 10 ** rng.uniform(5, 8)
-    return (
-        f'{{"id": "{name}", "kind": "mount", "from": {_end(start)}, "to": {_end(end)}, "tolerance": "10 %",'
-        f' "stiffness": {{"x": "{stiffness:.4e} N/m", "y": "{1.7 * stiffness:.4e} N/m"}}}}'
-    )
+    return {
+        "id": name,
+        "kind": "mount",
+        "from": start,
+        "to": end,
+        "tolerance": "10 %",
+        "stiffness": {"x": f"{stiffness:.4e} N/m", "y": f"{1.7 * stiffness:.4e} N/m"},
+    }
