@@ -12,7 +12,6 @@ from modalview.assembly.massroot import mass_root_inverse
 from modalview.assembly.pencil import Pencil
 from modalview.eigen.sums import column_sums
 from modalview.errors import NumericalError
-from modalview.factor.held import held_margin
 from modalview.factor.rounding import UNIT
 
 Array = npt.NDArray[np.float64]
@@ -81,4 +80,4 @@ def massless_floor(pencil: Pencil) -> MasslessFloor | None:
         return None
     scale = 1 / np.sqrt(pencil.K.diagonal()[where])
     # Held, but by how much is not proven: elimination went through, so its condition is below 1/u.
-    return MasslessFloor(where, scale, max(held_margin(pencil.K, pencil.massless), UNIT))
+    return MasslessFloor(where, scale, max(pencil.shifted.extents.margin, UNIT))
