@@ -78,6 +78,8 @@ def before_solve(pencil: Pencil) -> Bounds:
     elif rigid.number == pencil.modes:
         notes.append("Every mode is a rigid-body mode.")
     else:
+        if not rigid.exact:
+            notes.append(f"Zero modes by counts: within {to_hz(rigid.reach, up=True):.2g} Hz of zero.")
         found = lowest_bounds(pencil, forms, rigid)
         lowest = (to_hz(found.low, up=False), to_hz(found.high, up=True))
         notes.append(f"Lowest mode from below: {found.method}.")

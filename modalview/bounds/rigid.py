@@ -27,14 +27,19 @@ class RigidBody:
         r; None when rounding leaves it undecided (matrices of others only).
     negative : int or None
         Eigenvalues proven below zero.
-    exact : bool
-        Known from structure rather than by counts.
+    reach : float
+        rad**2/s**2: what lies nearer to zero was counted as zero; 0 where structure tells the number.
     """
 
     directions: Array
     number: int | None
     negative: int | None
-    exact: bool
+    reach: float
+
+    @property
+    def exact(self) -> bool:
+        """Whether structure tells the number, rather than counts."""
+        return self.reach == 0.0
 
 
 def rigid_body(pencil: Pencil) -> RigidBody:
@@ -42,11 +47,11 @@ def rigid_body(pencil: Pencil) -> RigidBody:
     known = pencil.rigid_body
     if known.shape[1] or pencil.rows is not None:
         directions = _orthonormal(pencil.basis.T @ (pencil.M @ known))
-        return RigidBody(directions, known.shape[1], count_negative(pencil.shifted).number, exact=True)
+        return RigidBody(directions, known.shape[1], count_negative(pencil.shifted).number, reach=0.0)
     zero = count_zero(pencil.shifted)
     if not zero.number:
-        return RigidBody(np.zeros((pencil.modes, 0)), zero.number, zero.below, exact=False)
-    return RigidBody(_sought(pencil, zero.number, zero.reach), zero.number, zero.below, exact=False)
+        return RigidBody(np.zeros((pencil.modes, 0)), zero.number, zero.below, zero.reach)
+    return RigidBody(_sought(pencil, zero.number, zero.reach), zero.number, zero.below, zero.reach)
 
 
 def _sought(pencil: Pencil, number: int, reach: float) -> Array:

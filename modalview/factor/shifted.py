@@ -19,6 +19,9 @@ if TYPE_CHECKING:
 
 Array = npt.NDArray[np.float64]
 
+# An uncertainty beyond this share of the shift is worth the time to bound it more sharply.
+REFINED_SHARE = 1e-9
+
 # Margins asked of a large massless block, in turn.
 MARGINS = (1e-2, 1e-4, 1e-6, 1e-8)
 
@@ -126,6 +129,8 @@ class ShiftedPencil:
         extents = self.extents
         pivots, rounding = factor_rounding(pattern, lu, extents.vector(extents.tau(sigma)))
         delta = extents.uncertainty(sigma, rounding)
+        if REFINED_SHARE * abs(sigma) < delta < np.inf:
+            delta = min(delta, extents.refined(sigma, rounding, lambda v: factor_rounding(pattern, lu, v)[1]))
         return Inertia(sigma, int(np.count_nonzero(pivots < 0)), delta, "sparse LDL^T", lu)
 
     def solve(self, found: Inertia, right: Array) -> Array:

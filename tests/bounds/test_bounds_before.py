@@ -164,6 +164,7 @@ def test_a_full_mass_matrix_of_others_has_no_discs_but_bounds(seed):
 def test_zero_modes_of_matrices_of_others_are_found_by_counts():
     free = plane(np.random.default_rng(5), 4, free=True)
     bounds, _ = assert_brackets(pencil_of_matrices(free.K, free.M), rigid=3)
+    assert any(note.startswith("Zero modes by counts") for note in bounds.notes)
     assert bounds.lowest_hz[0] > 0
 
 
