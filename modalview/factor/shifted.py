@@ -127,10 +127,11 @@ class ShiftedPencil:
         if not (np.array_equal(lu.perm_r, turned) and np.array_equal(lu.perm_c, turned)):
             return Inertia(sigma, 0, np.inf, "sparse LDL^T", lu)
         extents = self.extents
-        pivots, rounding = factor_rounding(pattern, lu, extents.vector(extents.tau(sigma)))
+        pivots, times = factor_rounding(pattern, lu)
+        rounding = times(extents.vector(extents.tau(sigma)))
         delta = extents.uncertainty(sigma, rounding)
         if REFINED_SHARE * abs(sigma) < delta < np.inf:
-            delta = min(delta, extents.refined(sigma, rounding, lambda v: factor_rounding(pattern, lu, v)[1]))
+            delta = min(delta, extents.refined(sigma, rounding, times))
         return Inertia(sigma, int(np.count_nonzero(pivots < 0)), delta, "sparse LDL^T", lu)
 
     def solve(self, found: Inertia, right: Array) -> Array:

@@ -18,6 +18,9 @@ if TYPE_CHECKING:
 Array = npt.NDArray[np.float64]
 Indices = npt.NDArray[np.intp]
 
+# Bounds what rounding makes of a non-negative vector (n,).
+Rounding = Callable[[Array], Array]
+
 # Power steps that sharpen a norm: two to three times sharper on large plane models, no more after two.
 REFINEMENTS = 2
 
@@ -97,7 +100,7 @@ class Extents:
             rows = rows + np.sqrt(tau) * self.formed_held
         return self._trusted(SLACK * float(self.press(rows, tau).max()), tau)
 
-    def refined(self, sigma: float, factoring: Array, again: Callable[[Array], Array]) -> float:
+    def refined(self, sigma: float, factoring: Array, again: Rounding) -> float:
         """Bound the same norm more sharply by max_i (F' d)_i / d_i with d after some power steps.
 
         F' = |X|^T F |X| is symmetric and not negative, so any positive d bounds its norm (L. Collatz (1942),
@@ -145,32 +148,37 @@ def extents_of(parts: PencilParts, pattern: Pattern, margin: float) -> Extents:
     )
 
 
-def factor_rounding(pattern: Pattern, lu: "SuperLU[np.float64]", vector: Array) -> tuple[Array, Array]:
-    """Return the pivots, and what the factorization's rounding makes of a non-negative vector (n,).
+def factor_rounding(pattern: Pattern, lu: "SuperLU[np.float64]") -> tuple[Array, Rounding]:
+    """Return the pivots, and a function that bounds the factorization's rounding times a vector (n,) >= 0.
 
-    The rounding is gamma_(s+3) |L||U| + |R||D||R|^T of ``ShiftedPencil.factorize``, times ``vector``.
+    The rounding is gamma_(s+3) |L||U| + |R||D||R|^T of ``ShiftedPencil.factorize``.
     """
     if pattern.factors is not None and pattern.factors.describe(lu):
-        return _mirrored(pattern.factors, pattern.terms, lu, vector)
-    return _unmirrored(pattern.terms, lu, vector)
+        return _mirrored(pattern.factors, gamma(pattern.terms + 3), lu)
+    return _unmirrored(gamma(pattern.terms + 3), lu)
 
 
-def _mirrored(
-    shape: Factors, terms: Indices, lu: "SuperLU[np.float64]", vector: Array
-) -> tuple[Array, Array]:
-    """Pivots and the rounding of the factorization times ``vector``, when U mirrors L entry by entry."""
+def _mirrored(shape: Factors, share: Array, lu: "SuperLU[np.float64]") -> tuple[Array, Rounding]:
+    """Work on the entries alone, as U mirrors L entry by entry."""
     upper = lu.U.data[shape.mirror]
     pivots = upper[shape.diagonal]
-    apart, size = _apart_and_size(upper, pivots[shape.columns] * lu.L.data)
-    starts = shape.lower_indptr[:-1]
-    grown = np.add.reduceat(size * (gamma(terms + 3) * vector)[shape.lower_indices], starts)
-    skew = np.add.reduceat(apart * vector[shape.lower_indices], starts)
+    mirror = pivots[shape.columns] * lu.L.data
+    # at least |U - D L^T| = 2 |D R^T|, its evaluation included, and at least |U| and |D L^T|
+    apart = np.abs(upper - mirror) + 2 * UNIT * np.abs(mirror)
+    size = np.abs(upper) + apart
+    starts, rows = shape.lower_indptr[:-1], shape.lower_indices
     inverse = 1 / np.abs(pivots)
-    entries = size * (grown * inverse)[shape.columns] + apart * (0.25 * skew * inverse)[shape.columns]
-    return pivots, np.bincount(shape.lower_indices, entries, vector.size).astype(float, copy=False)
+
+    def times(vector: Array) -> Array:
+        grown = np.add.reduceat(size * (share * vector)[rows], starts) * inverse
+        skew = np.add.reduceat(apart * vector[rows], starts) * (0.25 * inverse)
+        entries = size * grown[shape.columns] + apart * skew[shape.columns]
+        return np.bincount(rows, entries, vector.size).astype(float, copy=False)
+
+    return pivots, times
 
 
-def _unmirrored(terms: Indices, lu: "SuperLU[np.float64]", vector: Array) -> tuple[Array, Array]:
+def _unmirrored(share: Array, lu: "SuperLU[np.float64]") -> tuple[Array, Rounding]:
     """Do the same by sparse products, when some entry cancelled to an exact zero."""
     upper = sp.csr_array(lu.U)
     pivots: Array = np.asarray(upper.diagonal(), dtype=float)
@@ -178,12 +186,10 @@ def _unmirrored(terms: Indices, lu: "SuperLU[np.float64]", vector: Array) -> tup
     apart = abs(upper - mirror) + 2 * UNIT * abs(mirror)
     size = abs(upper) + apart
     inverse = 1 / np.abs(pivots)
-    rounding = size.T @ (inverse * (size @ (gamma(terms + 3) * vector)))
-    rounding += apart.T @ (0.25 * inverse * (apart @ vector))
-    return pivots, np.asarray(rounding, dtype=float)
 
+    def times(vector: Array) -> Array:
+        grown = size.T @ (inverse * (size @ (share * vector)))
+        skew = apart.T @ (0.25 * inverse * (apart @ vector))
+        return np.asarray(grown + skew, dtype=float)
 
-def _apart_and_size(upper: Array, mirror: Array) -> tuple[Array, Array]:
-    """At least |U - D L^T| = 2 |D R^T|, its evaluation included, and at least |U| and |D L^T|."""
-    apart = np.abs(upper - mirror) + 2 * UNIT * np.abs(mirror)
-    return apart, np.abs(upper) + apart
+    return pivots, times

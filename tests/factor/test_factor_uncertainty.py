@@ -27,9 +27,7 @@ def test_power_steps_sharpen_the_norm_and_stay_above_it(seed, massless):
     sigma = 1e-2 * extents.top
     lu, tau = shifted.factorize(sigma).lu, extents.tau(sigma)
 
-    def again(vector):
-        return factor_rounding(pattern, lu, vector)[1]
-
+    _, again = factor_rounding(pattern, lu)
     first = again(extents.vector(tau))
     columns = np.eye(extents.press(first, tau).size)
     norm = np.linalg.norm(
@@ -51,10 +49,11 @@ def test_the_factors_lie_within_their_rounding_of_the_matrix():
     lower, upper = lu.L.toarray().astype(exact), lu.U.toarray().astype(exact)
     pivots = np.diag(upper)
     middle = (lower + (upper / pivots[:, None]).T) / 2
+    _, times = factor_rounding(pattern, lu)
     order = np.argsort(pattern.turned)
     matrix = pattern.matrix(data).toarray()[np.ix_(order, order)].astype(exact)
     apart = np.abs(matrix - (middle * pivots) @ middle.T).astype(float)
-    bound = np.array([factor_rounding(pattern, lu, column)[1] for column in np.eye(shifted.n)])
+    bound = np.array([times(column) for column in np.eye(shifted.n)])
     noise = (
         np.finfo(exact).eps * np.abs((np.abs(middle) * np.abs(pivots)) @ np.abs(middle.T)).astype(float) * 50
     )
