@@ -1,7 +1,8 @@
-"""Solves large models in a process of their own.
+"""Solves larger models in a process of their own.
 
-Dense solves hold the interpreter lock: in a thread, a model of 2,000 coordinates would freeze the window for
-seconds. Starting a process and importing takes about a second, so small models stay in the thread.
+Dense solves hold the interpreter lock: in a thread, a model of 300 coordinates stops the window for half a
+second and one of 2,000 for many. Starting the process and importing takes about a second, so it is kept for
+the next solve, and small models stay in the thread.
 """
 
 import multiprocessing
@@ -13,52 +14,78 @@ from multiprocessing.context import SpawnProcess
 from typing import Any
 
 from modalview.errors import CancelledError, KeepclearError
-from modalview.model.parts import Model
 
-# From here on a solve in the thread would hold the window up for longer than a blink.
-LARGE_MODEL = 500
-_LOOK_ROUND_S = 0.05
-
-
-def solve_apart(outlook: Any, stopped: Callable[[], bool], progress: Callable[[str, float], None]) -> Any:
-    """Return the study.Solution of an outlook's model, found in another process.
-
-    Raises
-    ------
-    CancelledError
-        ``stopped`` said so; the process is ended at once.
-    KeepclearError
-        The modes could not be found; the text tells why.
-    RuntimeError
-        An error of the program, with the text of where it came up.
-    """
-    context = multiprocessing.get_context("spawn")
-    receiver, sender = context.Pipe(duplex=False)
-    process = context.Process(target=_solve, args=(sender, outlook.request.model), daemon=True)
-    process.start()
-    sender.close()
-    try:
-        found = _await(receiver, process, stopped, progress)
-    finally:
-        process.terminate()
-        process.join()
-        receiver.close()
-    return replace(found, outlook=outlook)
+# From here on a solve in the thread would hold the window up for longer than a tenth of a second.
+LARGE_MODEL = 150
+# Of each mode the largest energy shares are sent; the window shows five.
+SHARES_SENT = 12
+_LOOK_ROUND_S = 0.02
+_Progress = Callable[[str, float], None]
 
 
-def _await(
-    receiver: Connection,
-    process: SpawnProcess,
-    stopped: Callable[[], bool],
-    progress: Callable[[str, float], None],
+class Apart:
+    """The other process; started when first needed."""
+
+    def __init__(self) -> None:
+        self._process: SpawnProcess | None = None
+        self._line: Connection | None = None
+
+    def solve(self, outlook: Any, stopped: Callable[[], bool], progress: _Progress) -> Any:
+        """Return the study.Solution of an outlook's model, found in the other process.
+
+        Raises
+        ------
+        CancelledError
+            ``stopped`` said so; the process is ended at once.
+        KeepclearError
+            The modes could not be found; the text tells why.
+        RuntimeError
+            An error of the program, with the text of where it came up.
+        """
+        process, line = self._running()
+        try:
+            line.send(outlook.request.model)
+            found = await_answer(process, line, stopped, progress)
+        except (CancelledError, ProcessEndedError):
+            self.close()
+            raise
+        return replace(found, outlook=outlook)
+
+    def close(self) -> None:
+        """End the process, whatever it does."""
+        if self._process is not None and self._line is not None:
+            self._process.terminate()
+            self._process.join()
+            self._line.close()
+        self._process = self._line = None
+
+    def _running(self) -> tuple[SpawnProcess, Connection]:
+        if self._process is None or self._line is None or not self._process.is_alive():
+            self.close()
+            context = multiprocessing.get_context("spawn")
+            self._line, theirs = context.Pipe()
+            self._process = context.Process(target=serve, args=(theirs,), daemon=True)
+            self._process.start()
+            theirs.close()
+        return self._process, self._line
+
+
+class ProcessEndedError(KeepclearError):
+    """The other process ended by itself."""
+
+
+def await_answer(
+    process: SpawnProcess, line: Connection, stopped: Callable[[], bool], progress: _Progress
 ) -> Any:
+    """Return what the other process found, passing its progress on."""
     while not stopped():
-        if not receiver.poll(_LOOK_ROUND_S):
+        if not line.poll(_LOOK_ROUND_S):
             continue
         try:
-            kind, content = receiver.recv()
-        except EOFError:
-            raise KeepclearError(
+            kind, content = line.recv()
+        except (EOFError, OSError):
+            process.join()
+            raise ProcessEndedError(
                 f"The process that looked for the modes ended by itself (status {process.exitcode}); "
                 "the model may be too large for the memory."
             ) from None
@@ -71,15 +98,33 @@ def _await(
     raise CancelledError("Stopped by the user.")
 
 
-def _solve(sender: Connection, model: Model) -> None:
-    """Run in the other process: solve, and send what was found without the outlook, which is known."""
+def _lean(solution: Any) -> Any:
+    """Leave out what who asked has already, and the shares nobody is shown: they are most of the sending."""
+    modes = tuple(
+        replace(mode, strain=mode.strain[:SHARES_SENT], kinetic=mode.kinetic[:SHARES_SENT])
+        for mode in solution.modes
+    )
+    return replace(solution, outlook=None, modes=modes)
+
+
+def serve(line: Connection) -> None:
+    """Run in the other process: solve the models that come until the line is closed."""
     from modalview.study import solve  # noqa: PLC0415  (in the other process only)
     from modalview.study.results import Request  # noqa: PLC0415
 
-    request = Request(model, progress=lambda what, share: sender.send(("progress", (what, share))))
-    try:
-        sender.send(("found", replace(solve(request), outlook=None)))
-    except KeepclearError as error:
-        sender.send(("refused", str(error)))
-    except Exception:  # noqa: BLE001  (the other process has nobody else to tell)
-        sender.send(("failed", traceback.format_exc()))
+    previous = None
+    while True:
+        try:
+            model = line.recv()
+        except EOFError:
+            return
+        request = Request(model, progress=lambda what, share: line.send(("progress", (what, share))))
+        try:
+            found = solve(request, previous)
+            previous = found.outlook
+            answer = "found", _lean(found)
+        except KeepclearError as error:
+            answer = "refused", str(error)
+        except Exception:  # noqa: BLE001  (the other process has nobody else to tell)
+            answer = "failed", traceback.format_exc()
+        line.send(answer)

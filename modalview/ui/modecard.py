@@ -1,9 +1,10 @@
 """How one found mode is painted in the list: frequency, small picture, energy shares."""
 
+from dataclasses import dataclass
 from typing import Any
 
 from PySide6.QtCore import QModelIndex, QObject, QPersistentModelIndex, QRectF, QSize, Qt
-from PySide6.QtGui import QColor, QFont, QFontMetricsF, QPainter, QPen
+from PySide6.QtGui import QColor, QFont, QFontMetricsF, QPainter, QPen, QPixmap
 from PySide6.QtWidgets import QStyle, QStyledItemDelegate, QStyleOptionViewItem
 
 from modalview.model.parts import Model
@@ -15,11 +16,23 @@ from modalview.ui.theme import LIGHT, Theme
 _GAP = 8.0
 _RADIUS = 6.0
 _SMALL = 0.88  # of the text size
+_PALE = 0.55  # of a picture that is out of date
 _BARS = 3
 # Least and greatest width of a card, in heights of a line.
 _WIDTHS = (15.2, 19.0)
 _LEFT = Qt.AlignmentFlag.AlignLeft | Qt.AlignmentFlag.AlignVCenter
 _RIGHT = Qt.AlignmentFlag.AlignRight | Qt.AlignmentFlag.AlignVCenter
+
+
+@dataclass(frozen=True, slots=True)
+class _Now:
+    """What decides how a card looks, apart from its mode."""
+
+    chosen: bool
+    focus: bool
+    current: bool
+    band: str | None
+    size: tuple[int, int]
 
 
 class ModeCard(QStyledItemDelegate):
@@ -34,16 +47,19 @@ class ModeCard(QStyledItemDelegate):
         # By size in pixels: cards with a longer name or fewer shares leave their picture another height.
         self._small: dict[tuple[int, int], Any] = {}
         self._posed: dict[tuple[int, tuple[int, int]], Any] = {}
+        self._still: dict[tuple[int, _Now], tuple[QPixmap, QRectF]] = {}
 
     def set_theme(self, theme: Theme) -> None:
-        """Paint in other colours from now on."""
+        """Paint in other colours and sizes from now on."""
         self._theme = theme
+        self._still.clear()
 
     def set_model(self, model: Model | None) -> None:
         """Draw the small pictures of another model."""
         self._model = model
         self._small.clear()
         self._posed.clear()
+        self._still.clear()
 
     def set_room(self, width: int, height: int) -> None:
         """Make the cards as tall as the list; few of them share its width."""
@@ -58,34 +74,56 @@ class ModeCard(QStyledItemDelegate):
     def paint(
         self, painter: QPainter, option: QStyleOptionViewItem, index: QModelIndex | QPersistentModelIndex
     ) -> None:
-        """Paint one card."""
+        """Paint one card: what stands still from a kept picture, the small moving picture anew."""
         mode = index.data(ModeList.ModeRole)
-        band = index.data(ModeList.BandRole)
+        now = _Now(
+            chosen=bool(option.state & QStyle.StateFlag.State_Selected),
+            focus=bool(option.state & QStyle.StateFlag.State_HasFocus),
+            current=index.data(ModeList.CurrentRole),
+            band=index.data(ModeList.BandRole),
+            size=(option.rect.width(), option.rect.height()),
+        )
+        kept = self._still.get((mode.number, now))
+        if kept is None:
+            kept = self._still[mode.number, now] = self._paint_still(mode, now, option)
+        still, place = kept
         painter.save()
-        painter.setRenderHint(QPainter.RenderHint.Antialiasing)
-        box = QRectF(option.rect).adjusted(2, 2, -_GAP, -2)
-        self._paint_frame(painter, box, option.state)
-        if not index.data(ModeList.CurrentRole):
-            painter.setOpacity(0.55)
-        inner = box.adjusted(10, 7, -10, -7)
-        below = self._paint_head(painter, inner, mode, band)
-        above = self._paint_shares(painter, inner, mode)
-        self._paint_picture(painter, QRectF(inner.left(), below, inner.width(), above - below), mode)
+        painter.drawPixmap(option.rect.topLeft(), still)
+        painter.translate(option.rect.topLeft())
+        painter.setOpacity(1.0 if now.current else _PALE)
+        self._paint_picture(painter, place, mode)
         painter.restore()
 
-    def _paint_frame(self, painter: QPainter, box: QRectF, state: Any) -> None:
-        chosen = bool(state & QStyle.StateFlag.State_Selected)
-        focus = bool(state & QStyle.StateFlag.State_HasFocus)
+    def _paint_still(self, mode: Any, now: "_Now", option: QStyleOptionViewItem) -> tuple[QPixmap, QRectF]:
+        """Return the card without its small picture, and where that goes."""
+        ratio = option.widget.devicePixelRatioF() if option.widget is not None else 1.0
+        pixmap = QPixmap(option.rect.size() * ratio)
+        pixmap.setDevicePixelRatio(ratio)
+        pixmap.fill(Qt.GlobalColor.transparent)
+        painter = QPainter(pixmap)
+        painter.setFont(option.font)
+        painter.setRenderHint(QPainter.RenderHint.Antialiasing)
+        box = QRectF(0, 0, *now.size).adjusted(2, 2, -_GAP, -2)
+        self._paint_frame(painter, box, now)
+        inner = box.adjusted(10, 7, -10, -7)
+        below = self._paint_head(painter, inner, mode, now)
+        above = self._paint_shares(painter, inner, mode)
+        painter.end()
+        return pixmap, QRectF(inner.left(), below, inner.width(), above - below)
+
+    def _paint_frame(self, painter: QPainter, box: QRectF, now: "_Now") -> None:
         painter.setBrush(QColor(self._theme.card))
-        pen = QPen(QColor(self._theme.accent if chosen else self._theme.line), 2.0 if chosen else 1.0)
+        pen = QPen(QColor(self._theme.accent if now.chosen else self._theme.line), 2.0 if now.chosen else 1.0)
+        if not now.current:
+            pen.setStyle(Qt.PenStyle.DashLine)
         painter.setPen(pen)
         painter.drawRoundedRect(box, _RADIUS, _RADIUS)
-        if focus:
+        if now.focus:
             painter.setBrush(Qt.BrushStyle.NoBrush)
             painter.setPen(QPen(QColor(self._theme.accent), 1.0, Qt.PenStyle.DotLine))
             painter.drawRoundedRect(box.adjusted(3, 3, -3, -3), _RADIUS - 2, _RADIUS - 2)
 
-    def _paint_head(self, painter: QPainter, inner: QRectF, mode: Any, band: str | None) -> float:
+    def _paint_head(self, painter: QPainter, inner: QRectF, mode: Any, now: "_Now") -> float:
         """Paint frequency, range and name; return where they end."""
         bold = QFont(painter.font())
         bold.setBold(True)
@@ -93,15 +131,16 @@ class ModeCard(QStyledItemDelegate):
         line = metrics.height()
         head = QRectF(inner.left(), inner.top(), inner.width(), line)
         left = head
-        if band is not None:
+        if now.band is not None:
             paint_sign(painter, QRectF(head.left(), head.top() + 1, line - 2, line - 2), IN_BAND, self._theme)
             left = head.adjusted(line + 4, 0, 0, 0)
         text = f"{mode.number}  {frequency_text(mode)}"
-        self._write(painter, left, text, self._theme.in_band if band else self._theme.ink, font=bold)
+        self._write(painter, left, text, self._theme.in_band if now.band else self._theme.ink, font=bold)
         room = left.adjusted(metrics.horizontalAdvance(text) + 8, 0, 0, 0)
         small = QFont(painter.font())
         small.setPointSizeF(_SMALL * small.pointSizeF())
-        self._write(painter, room, range_text(mode), self._theme.quiet, small, _RIGHT)
+        words = range_text(mode) if now.current else "out of date"
+        self._write(painter, room, words, self._theme.quiet, small, _RIGHT)
         lines = 1 if painter.fontMetrics().horizontalAdvance(mode.name) <= inner.width() else 2
         name = QRectF(inner.left(), inner.top() + line + 1, inner.width(), lines * line)
         if lines == 1:

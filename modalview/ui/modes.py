@@ -13,8 +13,8 @@ from modalview.ui.modecard import ModeCard
 from modalview.ui.modelist import ModeList
 from modalview.ui.theme import Theme
 
-# The small pictures need no more than half the frames of the sheet.
-FRAME_MS = 33
+# The small pictures need fewer frames than the sheet.
+FRAME_MS = 40
 SWING_S = 1.6
 
 

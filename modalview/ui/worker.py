@@ -13,7 +13,7 @@ from PySide6.QtCore import QObject, QThread, Signal, Slot
 
 from modalview.errors import CancelledError, KeepclearError
 from modalview.model.parts import Model
-from modalview.ui.apart import LARGE_MODEL, solve_apart
+from modalview.ui.apart import LARGE_MODEL, Apart
 from modalview.ui.studydoor import Study, load_study
 
 # Models of at most so many coordinates find their modes after each edit, unless switched off: below, all
@@ -69,11 +69,16 @@ class _Desk(QObject):
         super().__init__()
         self._load = load
         self._previous: Any = None
+        self._apart = Apart()
 
     @Slot()
     def on_started(self) -> None:
         """Import while nobody waits."""
         self._load()
+
+    def close(self) -> None:
+        """End the other process; called when the thread has ended."""
+        self._apart.close()
 
     @Slot(object)
     def on_ordered(self, order: Order) -> None:
@@ -106,7 +111,7 @@ class _Desk(QObject):
         if order.find is Find.ALWAYS or (order.find is Find.IF_SMALL and small):
             self._answer(order, Step.FINDING)
             if outlook.assembly.pencil().n > LARGE_MODEL:
-                found = solve_apart(outlook, order.stop.is_set, request.progress)
+                found = self._apart.solve(outlook, order.stop.is_set, request.progress)
             else:
                 found = study.solve(request, outlook)
             self._answer(order, Step.SOLVED, found)
@@ -148,6 +153,7 @@ class Worker(QObject):
         self.stop()
         self._thread.quit()
         self._thread.wait()
+        self._desk.close()
 
     @Slot(object)
     def _on_answered(self, answer: Answer) -> None:

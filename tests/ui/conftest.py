@@ -7,7 +7,7 @@ os.environ["QT_QPA_PLATFORM"] = "offscreen"
 from pathlib import Path
 
 import pytest
-from PySide6.QtCore import QSettings, QThread, QtMsgType
+from PySide6.QtCore import QSettings, QtMsgType
 from PySide6.QtWidgets import QApplication
 
 from modalview.places import demo_models
@@ -52,8 +52,9 @@ def settings(tmp_path: Path) -> Settings:
 
 
 @pytest.fixture
-def make_window(qtbot, settings):
+def make_window(qapp, settings):
     """Return a function that opens windows; they are closed and their threads have ended afterwards."""
+    del qapp
     made = []
 
     def make(load=load_study) -> Window:

@@ -5,7 +5,7 @@ import multiprocessing
 import pytest
 from conftest import PUMP
 
-from modalview.errors import CancelledError, KeepclearError
+from modalview.errors import CancelledError
 from modalview.model.parts import Body, End, Model, Spring, Support
 from modalview.model.values import Entry, Value
 from modalview.store import read_model
@@ -36,56 +36,90 @@ def outlook_of(model: Model):
     return study.look(study.request(model), None)
 
 
+def answers_of_the_other_process(*models: Model) -> list:
+    ours, theirs = multiprocessing.Pipe()
+    for model in models:
+        ours.send(model)
+    # The end of the line is seen only after what was sent.
+    closing = Ended(theirs, len(models))
+    apart.serve(closing)
+    kept = []
+    while ours.poll():
+        kept.append(ours.recv())
+    return kept
+
+
+class Ended:
+    """A line that ends after so many models, as when the window is gone."""
+
+    def __init__(self, line, models: int) -> None:
+        self._line, self._left = line, models
+        self.send = line.send
+
+    def recv(self):
+        if not self._left:
+            raise EOFError
+        self._left -= 1
+        return self._line.recv()
+
+
 def test_the_other_process_sends_progress_and_then_what_it_found():
-    receiver, sender = multiprocessing.Pipe(duplex=False)
-    apart._solve(sender, read_model(PUMP))
-    kinds = []
-    while receiver.poll():
-        kind, content = receiver.recv()
-        kinds.append(kind)
-    assert set(kinds[:-1]) <= {"progress"}
+    *before, (kind, found) = answers_of_the_other_process(read_model(PUMP))
+    assert {kind for kind, _ in before} <= {"progress"}
+    assert kind == "found"
+    assert found.outlook is None
+    assert found.modes[0].frequency_hz == pytest.approx(51.26, abs=0.01)
+
+
+def test_a_model_that_cannot_be_solved_is_told_in_words_and_the_next_is_solved():
+    kinds = [kind for kind, _ in answers_of_the_other_process(Model(), read_model(PUMP))]
+    assert kinds[0] == "refused"
     assert kinds[-1] == "found"
-    assert content.outlook is None
-    assert content.modes[0].frequency_hz == pytest.approx(51.26, abs=0.01)
 
 
-def test_a_model_that_cannot_be_solved_is_told_in_words():
-    receiver, sender = multiprocessing.Pipe(duplex=False)
-    apart._solve(sender, Model())
-    kind, content = receiver.recv()
-    assert kind == "refused"
-    assert "\n" not in content.strip() or "Traceback" not in content
+def untold(*step) -> None:
+    """Progress that nobody hears."""
 
 
 class Process:
     exitcode = -9
 
+    def join(self) -> None:
+        pass
+
 
 def test_a_process_that_ends_by_itself_is_told():
-    receiver, sender = multiprocessing.Pipe(duplex=False)
-    sender.close()
-    with pytest.raises(KeepclearError, match="status -9"):
-        apart._await(receiver, Process(), lambda: False, lambda what, share: None)
+    ours, theirs = multiprocessing.Pipe()
+    theirs.close()
+    with pytest.raises(apart.ProcessEndedError, match="status -9"):
+        apart.await_answer(Process(), ours, lambda: False, untold)
 
 
 def test_waiting_ends_at_once_when_stopped():
-    receiver, _ = multiprocessing.Pipe(duplex=False)
+    ours, _theirs = multiprocessing.Pipe()
     with pytest.raises(CancelledError):
-        apart._await(receiver, Process(), lambda: True, lambda what, share: None)
+        apart.await_answer(Process(), ours, lambda: True, untold)
+
+
+def test_an_error_of_the_program_comes_with_its_text():
+    ours, theirs = multiprocessing.Pipe()
+    theirs.send(("failed", "Traceback: division by zero"))
+    with pytest.raises(RuntimeError, match="division by zero"):
+        apart.await_answer(Process(), ours, lambda: False, untold)
 
 
 @pytest.mark.slow
-def test_a_large_chain_is_solved_apart_and_its_modes_belong_to_the_outlook():
-    outlook = outlook_of(chain(600))
+def test_a_larger_chain_is_solved_apart_stopped_and_solved_again():
+    other = apart.Apart()
+    outlook = outlook_of(chain(160))
     told = []
-    found = apart.solve_apart(outlook, lambda: False, lambda what, share: told.append(share))
-    assert found.outlook is outlook
-    assert len(found.modes) == 600
-    assert told
-
-
-@pytest.mark.slow
-def test_a_large_solve_can_be_stopped():
-    outlook = outlook_of(chain(600))
-    with pytest.raises(CancelledError):
-        apart.solve_apart(outlook, lambda: True, lambda what, share: None)
+    try:
+        found = other.solve(outlook, lambda: False, lambda *step: told.append(step))
+        assert found.outlook is outlook
+        assert len(found.modes) == 160
+        assert told
+        with pytest.raises(CancelledError):
+            other.solve(outlook, lambda: True, untold)
+        assert len(other.solve(outlook, lambda: False, untold).modes) == 160
+    finally:
+        other.close()

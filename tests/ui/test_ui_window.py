@@ -236,7 +236,9 @@ def test_every_place_is_painted_in_each_theme_and_at_large_text(pump, theme):
     assert not image.isNull()
 
 
-@pytest.mark.parametrize("example", bundled_examples(), ids=lambda one: f"{one.path.parent.name}-{one.variant}")
+@pytest.mark.parametrize(
+    "example", bundled_examples(), ids=lambda one: f"{one.path.parent.name}-{one.variant}"
+)
 def test_every_example_has_a_sentence_of_its_story(example):
     assert Path(example.path).is_file()
     assert 20 < len(example.sentence) < 160

@@ -48,7 +48,8 @@ def bench():
 
 
 @pytest.fixture
-def worker(qtbot, bench):
+def worker(qapp, bench):
+    del qapp
     made = Worker(load=lambda: Study(bench.request, bench.look, bench.solve))
     made.start()
     yield made
@@ -77,6 +78,8 @@ def test_an_order_is_looked_at_and_a_small_model_solved(worker, bench, answers, 
 def test_a_model_that_is_not_small_is_solved_only_when_asked(worker, bench, answers, qtbot):
     bench.go.set()
     bench.coordinates = 301
+    elsewhere = SimpleNamespace(solve=lambda outlook, *_: outlook, close=lambda: None)
+    worker._desk._apart = elsewhere
     worker.order(FIRST, Find.IF_SMALL)
     qtbot.waitUntil(lambda: Step.LOOKED in steps(answers))
     worker.order(FIRST, Find.ALWAYS)
