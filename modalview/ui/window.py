@@ -3,145 +3,41 @@
 from pathlib import Path
 from typing import Any
 
-from PySide6.QtCore import Qt, QTimer, Signal
-from PySide6.QtGui import QCloseEvent, QDragEnterEvent, QDropEvent, QFontMetrics
-from PySide6.QtWidgets import (
-    QApplication,
-    QHBoxLayout,
-    QLabel,
-    QMainWindow,
-    QSplitter,
-    QStackedWidget,
-    QStyle,
-    QTabBar,
-    QVBoxLayout,
-    QWidget,
-)
+from PySide6.QtCore import QTimer, Signal
+from PySide6.QtGui import QCloseEvent, QDragEnterEvent, QDropEvent
+from PySide6.QtWidgets import QApplication, QStyle
 
-from modalview.places import resources
 from modalview.ui import settings as names
 from modalview.ui.analysis import Analysis
-from modalview.ui.banner import Banner
-from modalview.ui.dialogs import ReadingDialog, TextDialog
+from modalview.ui.dialogs import TextDialog
 from modalview.ui.document import Document
-from modalview.ui.examples import bundled_examples, first_of_each
+from modalview.ui.examples import bundled_examples
 from modalview.ui.failure import error_text
 from modalview.ui.filing import Filing
-from modalview.ui.menus import Menus, keyboard_text
-from modalview.ui.modes import Modes, evidence
-from modalview.ui.parttable import PartTable
-from modalview.ui.playbar import PlayBar
-from modalview.ui.results import Results
-from modalview.ui.scale import ScalePanel
+from modalview.ui.frame import Frame
+from modalview.ui.modes import evidence
 from modalview.ui.settings import Settings
-from modalview.ui.sheet import Sheet
-from modalview.ui.status import StatusLine
-from modalview.ui.theme import TEXT_PERCENTS, Theme, apply_theme
-from modalview.ui.welcome import Welcome
+from modalview.ui.theme import TEXT_PERCENTS
 from modalview.ui.worker import Worker
 
-_SIZE = (1280, 800)
 _COLOURS = {"As the system": "system", "Light": "light", "Dark": "dark"}
-_ZOOM = 1.25
-# In heights of a line, so that larger text keeps its room.
-_RESULTS_WIDTH, _BELOW_HEIGHT = 17.5, 15.0
 
 
-class Window(QMainWindow):
+class Window(Frame):
     """One model at a time."""
 
     closed = Signal()
 
     def __init__(self, settings: Settings, worker: Worker) -> None:
-        super().__init__()
-        self._settings, self._worker = settings, worker
-        self.document = Document(self)
-        self.analysis = Analysis(worker, self)
+        super().__init__(settings, Document(), Analysis(worker))
+        self.document.setParent(self)
+        self.analysis.setParent(self)
+        self._worker = worker
         self.filing = Filing(self.document, settings, self)
-        self._theme: Theme | None = None
         self._may_close = False
-        self._build()
-        self.menus = Menus(self)
         self._connect()
         self._recall()
         self.show_document()
-
-    # Building
-
-    def _build(self) -> None:
-        self.resize(*_SIZE)
-        self.setMinimumSize(840, 540)
-        self.setAcceptDrops(True)
-        self.banner = Banner(self)
-        self.sheet = Sheet(self)
-        self.play_bar = PlayBar(self)
-        self.scale = ScalePanel(self)
-        self.results = Results(self.document, self.analysis, self)
-        self.modes = Modes(self)
-        self.parts = PartTable(self.document, self)
-        self.status = StatusLine(self.statusBar())
-        self.welcome = Welcome(first_of_each(bundled_examples()), self)
-        self.work = QWidget(self)
-        column = QVBoxLayout(self.work)
-        column.setContentsMargins(0, 0, 0, 0)
-        column.setSpacing(0)
-        column.addWidget(self.banner)
-        column.addWidget(self._places(), 1)
-        self.pages = QStackedWidget(self)
-        self.pages.addWidget(self.welcome)
-        self.pages.addWidget(self.work)
-        self.setCentralWidget(self.pages)
-
-    def _places(self) -> QSplitter:
-        left = QSplitter(Qt.Orientation.Vertical, self)
-        left.addWidget(self._drawing())
-        left.addWidget(self._tabs())
-        left.setStretchFactor(0, 1)
-        left.setSizes([440, 236])
-        left.setChildrenCollapsible(False)
-        places = QSplitter(Qt.Orientation.Horizontal, self)
-        for widget in (left, self.scale, self.results):
-            places.addWidget(widget)
-        places.setStretchFactor(0, 3)
-        places.setStretchFactor(1, 1)
-        places.setSizes([652, 322, 306])
-        places.setChildrenCollapsible(False)
-        return places
-
-    def _drawing(self) -> QWidget:
-        above = QWidget(self)
-        above.setObjectName("drawing")
-        layout = QVBoxLayout(above)
-        layout.setContentsMargins(0, 0, 0, 4)
-        layout.setSpacing(0)
-        layout.addWidget(self.sheet, 1)
-        layout.addWidget(self.play_bar)
-        return above
-
-    def _tabs(self) -> QWidget:
-        below = self.below = QWidget(self)
-        self.tabs = QTabBar(below)
-        self.tabs.setDrawBase(False)
-        self.tabs.addTab("Modes")
-        self.tabs.addTab("Values")
-        self.tabs.setAccessibleName("Modes or values")
-        self.proof = QLabel(below)
-        self.proof.setProperty("role", "small")
-        self.proof.setWordWrap(True)
-        self._pages = QStackedWidget(below)
-        self._pages.addWidget(self.modes)
-        self._pages.addWidget(self.parts)
-        self.tabs.currentChanged.connect(self._pages.setCurrentIndex)
-        top = QHBoxLayout()
-        top.setContentsMargins(8, 0, 12, 0)
-        top.addWidget(self.tabs)
-        top.addWidget(self.proof, 1)
-        layout = QVBoxLayout(below)
-        layout.setContentsMargins(0, 0, 0, 0)
-        layout.setSpacing(0)
-        layout.addLayout(top)
-        layout.addWidget(self._pages, 1)
-        return below
 
     def _connect(self) -> None:
         self.document.opened.connect(self.on_opened)
@@ -180,35 +76,6 @@ class Window(QMainWindow):
         self.menus.offer("text_sizes", sizes, get(names.TEXT_SIZE), self.on_text_size)
         if not get(names.GEOMETRY).isEmpty():
             self.restoreGeometry(get(names.GEOMETRY))
-        self.apply_theme()
-
-    # Looks
-
-    def apply_theme(self) -> None:
-        """Dress the window as the settings say."""
-        percent = self._settings.get(names.TEXT_SIZE)
-        self._theme = apply_theme(QApplication.instance(), self._settings.get(names.THEME), percent)
-        self.banner.set_theme(self._theme)
-        self.sheet.set_theme(self._theme, percent / 100)
-        self.scale.canvas.set_theme(self._theme, percent / 100)
-        self.modes.set_theme(self._theme)
-        self.results.set_theme(self._theme)
-        self.parts.lines.set_theme(self._theme)
-        self.parts.fit_columns()
-        self.play_bar.set_theme(self._theme)
-        line = QFontMetrics(QApplication.font()).height()
-        self.results.setMinimumWidth(round(_RESULTS_WIDTH * line))
-        self.below.setMinimumHeight(round(_BELOW_HEIGHT * line))
-        self.welcome.set_theme(self._theme)
-
-    def on_theme(self, choice: Any) -> None:
-        """Light, dark or the system's."""
-        self._settings.set(names.THEME, choice)
-        self.apply_theme()
-
-    def on_text_size(self, percent: Any) -> None:
-        """Enlarge all text."""
-        self._settings.set(names.TEXT_SIZE, percent)
         self.apply_theme()
 
     # The model
@@ -314,37 +181,6 @@ class Window(QMainWindow):
         """Save elsewhere."""
         self.filing.save_as()
 
-    def on_fit(self) -> None:
-        """Show the whole model."""
-        self.sheet.fit()
-
-    def on_zoom_in(self) -> None:
-        """Enlarge the sheet."""
-        self.sheet.zoom(_ZOOM)
-
-    def on_zoom_out(self) -> None:
-        """Show more of the sheet."""
-        self.sheet.zoom(1 / _ZOOM)
-
-    def on_go_to_sheet(self) -> None:
-        """Give the keyboard to the sheet."""
-        self.sheet.setFocus()
-
-    def on_go_to_modes(self) -> None:
-        """Give the keyboard to the row of modes."""
-        self.tabs.setCurrentIndex(0)
-        self.modes.row.setFocus()
-
-    def on_go_to_values(self) -> None:
-        """Give the keyboard to the parts table."""
-        self.tabs.setCurrentIndex(1)
-        self.parts.setFocus()
-
-    def on_go_to_results(self) -> None:
-        """Give the keyboard to the first field of the results."""
-        self.results.setFocus()
-        self.results.focusNextChild()
-
     def on_find(self) -> None:
         """Find the modes."""
         self.analysis.find()
@@ -364,46 +200,10 @@ class Window(QMainWindow):
         """Choose the previous mode."""
         self.modes.row.step(-1)
 
-    def on_move(self, moving: bool) -> None:  # noqa: FBT001  (a slot)
-        """Let the modes move, or stand still at their largest."""
-        self._settings.set(names.MOVE, moving)
-        self._move(moving)
-
-    def _move(self, moving: bool) -> None:  # noqa: FBT001  (as the slot)
-        action = self.menus.actions["on_move"]
-        kept = action.blockSignals(True)
-        action.setChecked(moving)
-        action.blockSignals(kept)
-        kept = self.play_bar.blockSignals(True)
-        self.play_bar.set_moving(moving)
-        self.play_bar.blockSignals(kept)
-        self.sheet.set_moving(moving)
-        self.modes.row.set_moving(moving)
-
-    def on_amplitude(self, percent: int) -> None:
-        """Move the mode farther or less."""
-        self._settings.set(names.AMPLITUDE, percent)
-        self.sheet.set_amplitude(percent / 100)
-
-    def on_discs(self, shown: bool) -> None:  # noqa: FBT001  (a slot)
-        """Show or fold the Gershgorin bounds."""
-        self._settings.set(names.DISCS, shown)
-        self.scale.discs.setChecked(shown)
-        self.menus.actions["on_discs"].setChecked(shown)
-
     def on_part_chosen(self, part: str) -> None:
         """Show the values of the part that was chosen on the sheet."""
         self.tabs.setCurrentIndex(1)
         self.parts.choose_part(part)
-
-    def on_keyboard(self) -> None:
-        """List the keys."""
-        ReadingDialog("Keyboard", keyboard_text(), self).open()
-
-    def on_about(self) -> None:
-        """Say what the program is, and the cautions."""
-        text = (resources() / "cautions.md").read_text(encoding="utf-8")
-        ReadingDialog("About Keepclear", text, self).open()
 
     def _fill_examples(self) -> None:
         menu = self.menus.submenus["examples"]
