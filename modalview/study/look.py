@@ -71,8 +71,20 @@ def _stop_if(request: Request) -> None:
 
 
 def _notes(assembly: Assembly) -> tuple[str, ...]:
+    return (*assembly.notes, *_free_motion(assembly), *_taken_as_exact(assembly))
+
+
+def _free_motion(assembly: Assembly) -> list[str]:
+    number = assembly.structure.rigid_body.shape[1]
+    if number == 0:
+        return []
+    modes = "1 rigid-body mode" if number == 1 else f"{number} rigid-body modes"
+    return [f"{modes} at 0 Hz: motion that nothing resists; left out of every band"]
+
+
+def _taken_as_exact(assembly: Assembly) -> list[str]:
     exact = assembly.exact_values
     if not exact or not assembly.toleranced:
-        return assembly.notes
+        return []
     names = ", ".join(f"{p.label} {p.id.rpartition('.')[2]}" for p in exact)
-    return (*assembly.notes, f"taken as exact, without tolerance: {names}")
+    return [f"taken as exact, without tolerance: {names}"]
