@@ -12,7 +12,7 @@ import scipy.sparse as sp
 from modalview.assembly.coordinates import Coordinates, independent_coordinates
 from modalview.assembly.kinematics import places
 from modalview.assembly.masses import principal_terms
-from modalview.assembly.parameters import Case, Parameter, values_at
+from modalview.assembly.parameters import Case, Parameter, shown_name, values_at
 from modalview.assembly.pencil import Coordinate, Pencil, Reused
 from modalview.assembly.perpart import PerPart, per_part
 from modalview.assembly.quadratic import QuadraticForm
@@ -28,6 +28,9 @@ Array = npt.NDArray[np.float64]
 # A term is a product of at most three typed values (a beam's E and I, a spring's k and its dynamic ratio).
 FACTORS = 3
 ALL_FREEDOMS = FREEDOMS[Motion.SPACE]
+# An entry this small against the products it is the sum of is their rounding: sums have a dozen products,
+# and lengths typed to fifteen digits differ by more than this where they differ at all.
+CANCELLED = 1e-14
 
 
 @dataclass(frozen=True, eq=False)
@@ -64,6 +67,12 @@ class TermSet:
     def form(self) -> QuadraticForm:
         """The matrix of the terms, ready to be refilled."""
         return QuadraticForm(self.rows)
+
+    @cached_property
+    def at_work(self) -> frozenset[str]:
+        """Parts with a term that some motion stretches."""
+        filled = np.diff(self.rows.indptr)
+        return frozenset(part for part, entries in zip(self.part, filled, strict=True) if entries)
 
 
 @dataclass(frozen=True, eq=False)
@@ -112,8 +121,15 @@ class Assembly:
 
     @property
     def notes(self) -> tuple[str, ...]:
-        """What was locked or left out."""
-        return self.structure.coordinates.notes
+        """What was locked or left out, and links that have nothing to stretch."""
+        terms = self.structure.stiffness
+        idle = set(terms.part) - terms.at_work
+        still = (
+            f"{shown_name(link)}: no motion stretches it; its ends are held or joined rigidly"
+            for link in self.model.links
+            if link.id in idle
+        )
+        return (*self.structure.coordinates.notes, *still)
 
     @property
     def toleranced(self) -> bool:
@@ -245,13 +261,27 @@ def _link_terms(
             keys.append(f"{link.id}.dynamic_ratio")
         products.append([index[key] for key in keys])
     return TermSet(
-        rows=sp.csr_array(_rows(forms, columns) @ coordinates.to_bodies),
+        rows=_without_rounding(_rows(forms, columns), coordinates.to_bodies),
         support_rows=_rows(forms, support_columns),
         support_freedoms=supports,
         factor=np.array([term.factor for _, term in terms], dtype=float),
         product_of=_padded(products, len(index)),
         part=tuple(link.id for link, _ in terms),
     )
+
+
+def _without_rounding(forms: sp.csr_array, to_bodies: sp.csr_array) -> sp.csr_array:
+    """Return forms @ to_bodies without what is left of entries that cancel.
+
+    A spring between two bodies of one rigid cluster stretches by nothing; a rest of 1e-17 in its row would
+    be taken for a direction of its own where rows are normalised.
+    """
+    rows, products = forms @ to_bodies, abs(forms) @ abs(to_bodies)
+    meant = (abs(rows) - CANCELLED * products) > 0
+    kept = sp.csr_array(rows.multiply(meant))
+    kept.eliminate_zeros()
+    kept.sort_indices()
+    return kept
 
 
 def _rows(

@@ -1,5 +1,6 @@
 """Rigid clusters, held directions, massless parts: the exact change of variable and its notes."""
 
+from dataclasses import replace
 from itertools import pairwise
 
 import numpy as np
@@ -169,6 +170,29 @@ class TestClusters:
             [rigid("r", "a", "b"), rigid("s", "b", "c"), mount("m", "a", "g", **THREE)],
         )
         np.testing.assert_allclose(omegas(given), omegas(whole), rtol=1e-12)
+
+    def test_a_beam_inside_a_cluster_stretches_by_exactly_nothing(self):
+        # A rest of rounding in its rows once passed for directions, and turned the rigid-body modes askew.
+        beam = joined("beam", "v", "b", "a", E="200 GPa", A="330 mm2", I="330 cm4", name="old strut")
+        given = model(
+            "plane",
+            [
+                body("a", -0.6, 2.9, inertia=1.0),
+                body("b", -0.3, 1.3, inertia=2.5),
+                body("c", 2.3, 0.8, inertia=1.0),
+            ],
+            [rigid("r", "a", "b"), beam, spring("k", "a", "c"), spring("l", "c", "g", direction=[1, -1])],
+        )
+        without = replace(given, links=tuple(link for link in given.links if link.id != "v"))
+        terms = assemble(given).structure.stiffness
+        assert set(terms.part) - terms.at_work == {"v"}
+        assert (
+            "old strut: no motion stretches it; its ends are held or joined rigidly" in assemble(given).notes
+        )
+        one, other = assemble(given).pencil(), assemble(without).pencil()
+        assert one.rigid_body.shape[1] == other.rigid_body.shape[1] == 4
+        np.testing.assert_array_equal(one.K.toarray(), other.K.toarray())
+        np.testing.assert_allclose(one.rows @ one.rigid_body, 0, atol=1e-14)
 
 
 def dumb_bell(place, mounts):
