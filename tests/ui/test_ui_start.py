@@ -25,14 +25,15 @@ def test_a_screen_is_known_by_the_environment(monkeypatch, variable):
     assert start.has_screen()
 
 
-def test_the_window_is_built_before_numpy_is_imported():
+def test_the_window_is_built_before_numpy_is_imported(tmp_path):
     script = (
         "import sys, modalview.ui.app as app;"
         "from PySide6.QtCore import QSettings; from modalview.ui.settings import Settings;"
         "program = app.application();"
-        "window = app.Window(Settings(QSettings('none', QSettings.Format.IniFormat)), app.Worker());"
+        "window = app.Window(Settings(QSettings(sys.argv[1], QSettings.Format.IniFormat)), app.Worker());"
         "window.show(); program.processEvents();"
         "sys.exit('numpy' in sys.modules or 'scipy' in sys.modules)"
     )
-    run = subprocess.run([sys.executable, "-c", script], check=False, timeout=60)  # noqa: S603  (our own words)
+    words = [sys.executable, "-c", script, str(tmp_path / "settings.ini")]
+    run = subprocess.run(words, check=False, timeout=60)  # noqa: S603  (our own words)
     assert run.returncode == 0
