@@ -62,3 +62,16 @@ def test_layers_of_developers_md_are_those_that_are_checked():
     layers = project["tool"]["importlinter"]["contracts"][0]["layers"]
     (shown,) = (block for block in re.findall(r"(?:^ {4}.*\n)+", text, re.MULTILINE) if "__main__ " in block)
     assert [re.split(r"\s{2,}", line.strip())[0] for line in shown.splitlines()] == layers
+
+
+def test_functions_of_developers_md_stand_where_it_says():
+    text = (ROOT / "DEVELOPERS.md").read_text(encoding="utf-8")
+    said = re.findall(r"`([A-Za-z_.]+)`\s+\(`(modalview/[\w/]+\.py)`\)", text)
+    assert len(said) >= 10
+    wrong = [
+        (name, path)
+        for name, path in said
+        for one in name.split(".")
+        if not re.search(rf"(?:def|class) {one}\b", (ROOT / path).read_text(encoding="utf-8"))
+    ]
+    assert wrong == []
