@@ -16,6 +16,7 @@ from PySide6.QtWidgets import (
     QWidget,
 )
 
+from modalview import __version__
 from modalview.places import resources
 from modalview.ui import settings as names
 from modalview.ui.analysis import Analysis
@@ -222,4 +223,5 @@ class Frame(QMainWindow):
     def on_about(self) -> None:
         """Say what the program is, and the cautions."""
         text = (resources() / "cautions.md").read_text(encoding="utf-8")
-        ReadingDialog("About Keepclear", text, self).open()
+        version = f"\nVersion {__version__}. MIT licence, without any warranty.\n"
+        ReadingDialog("About Keepclear", text + version, self).open()

@@ -119,10 +119,12 @@ class Modes(QWidget):
         """Show the modes that are found; those of an older model are pale until found again."""
         solution = analysis.solution
         if solution is None:
-            self.row.modes.show_solution(None, current=True)
             self.invitation.setText(_invitation(analysis))
-            self._stack.setCurrentWidget(self.invitation)
-            self.mode_chosen.emit(None)
+            if self.row.modes.rowCount():
+                self.row.modes.show_solution(None, current=True)
+            if self._stack.currentWidget() is not self.invitation:
+                self._stack.setCurrentWidget(self.invitation)
+                self.mode_chosen.emit(None)
             return
         self._stack.setCurrentWidget(self.row)
         if analysis.solution_current:
@@ -147,7 +149,7 @@ def _model_of(solution: Any) -> Model:
 
 def _invitation(analysis: Analysis) -> str:
     if analysis.finding:
-        return "Finding the modes…"
+        return f"Finding the modes… {analysis.progress[0]}"
     if analysis.outlook is None:
         return ""
     return (

@@ -191,7 +191,7 @@ class PartTable(QTableView):
         """Make columns and lines as large as the text needs."""
         wide = self.fontMetrics().averageCharWidth()
         self.verticalHeader().setDefaultSectionSize(round(1.55 * self.fontMetrics().height()))
-        for column, characters in ((PART, 22), (WHAT, 22), (TYPED, 20), (TOLERANCE, 17)):
+        for column, characters in ((PART, 20), (WHAT, 24), (TYPED, 20), (TOLERANCE, 17)):
             self.setColumnWidth(column, characters * wide)
 
     def choose_part(self, part_id: str) -> None:

@@ -6,7 +6,7 @@ from collections.abc import Callable
 from dataclasses import dataclass
 from pathlib import Path
 
-from PySide6.QtCore import QSettings, QThread
+from PySide6.QtCore import QSettings, QTimer
 from PySide6.QtWidgets import QApplication
 
 from modalview.errors import InputError
@@ -16,6 +16,7 @@ from modalview.ui.settings import Settings
 from modalview.ui.window import Window
 
 _PATIENCE_S = 120.0
+_SETTLE_S = 0.15
 
 
 @dataclass(frozen=True, slots=True)
@@ -99,11 +100,18 @@ def _arrange(window: Window, look: Look) -> None:
 
 
 def _wait(program: QApplication, ready: Callable[[], bool]) -> None:
-    """Let the program work until it is ready, and a little longer for layouts to settle."""
+    """Run the program until it is ready, and a little longer for layouts to settle."""
     end = time.monotonic() + _PATIENCE_S
-    while not ready() and time.monotonic() < end:
-        program.processEvents()
-        QThread.msleep(5)
-    for _ in range(10):
-        program.processEvents()
-        QThread.msleep(5)
+    last: list[float] = []
+
+    def on_time() -> None:
+        if not last and (ready() or time.monotonic() > end):
+            last.append(time.monotonic())
+        if last and time.monotonic() > last[0] + _SETTLE_S:
+            program.quit()
+
+    timer = QTimer(interval=10)
+    timer.timeout.connect(on_time)
+    timer.start()
+    program.exec()
+    timer.stop()

@@ -105,6 +105,7 @@ class Window(Frame):
         self.results.forget_machines()
         self.show_document()
         self._show_model(anew=True)
+        self.sheet.setFocus()
 
     def on_model_changed(self) -> None:
         """Let sheet and tables follow at once, scale and verdict as soon as counted."""
@@ -147,7 +148,9 @@ class Window(Frame):
         self.proof.setText(evidence(self.analysis))
         self.proof.setToolTip("\n".join(self.analysis.solution.evidence) if self.analysis.solution else "")
         self._show_play_bar()
-        if not self.analysis.looking:
+        if self.analysis.looking:
+            self.banner.show_analysis(self.analysis)
+        else:
             self.show_known()
 
     def on_mode_chosen(self, mode: Any) -> None:
@@ -161,6 +164,8 @@ class Window(Frame):
     def show_busy(self) -> None:
         """Show progress while modes are being found."""
         self.banner.show_busy(self.analysis)
+        if self.analysis.solution is None:
+            self.modes.show_analysis(self.analysis)
 
     def on_failed(self, error: Exception) -> None:
         """Tell of an error the program made while studying, and go on."""
