@@ -39,7 +39,7 @@ from modalview.ui.welcome import Welcome
 _SIZE = (1280, 800)
 _ZOOM = 1.25
 # In heights of a line, so that larger text keeps its room.
-_RESULTS_WIDTH, _BELOW_HEIGHT = 17.5, 15.0
+_RESULTS_WIDTH, _BELOW_HEIGHT = 17.5, 13.5
 
 
 class Frame(QMainWindow):

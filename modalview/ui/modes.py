@@ -88,7 +88,8 @@ class ModeRow(QListView):
         bar = self.horizontalScrollBar().sizeHint().height()
         count = max(self.modes.rowCount(), 1)
         self.card.set_room(self.viewport().width() // count, max(self.height() - bar - 14, 60))
-        self.scheduleDelayedItemsLayout()
+        self.doItemsLayout()
+        self.scrollTo(self.currentIndex())
 
 
 class Modes(QWidget):

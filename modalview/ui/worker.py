@@ -126,6 +126,7 @@ class Worker(QObject):
     def __init__(self, parent: QObject | None = None, load: Callable[[], Study] = load_study) -> None:
         super().__init__(parent)
         self._latest = Order(0, Model(), Find.NEVER)
+        self._closed = False
         self._thread = QThread()
         self._thread.setObjectName("study")
         self._desk = _Desk(load)
@@ -135,8 +136,9 @@ class Worker(QObject):
         self._desk.answered.connect(self._on_answered)
 
     def start(self) -> None:
-        """Start the thread; orders given before wait for it."""
-        self._thread.start()
+        """Start the thread, unless it was closed already; orders given before wait for it."""
+        if not self._closed:
+            self._thread.start()
 
     def order(self, model: Model, find: Find) -> None:
         """Ask for a study; an earlier order is stopped and its answers are dropped."""
@@ -150,6 +152,7 @@ class Worker(QObject):
 
     def close(self) -> None:
         """Stop and wait for the thread to end."""
+        self._closed = True
         self.stop()
         self._thread.quit()
         self._thread.wait()

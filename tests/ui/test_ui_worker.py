@@ -151,3 +151,11 @@ def test_closing_while_a_solve_runs_ends_the_thread(worker, bench, qtbot):
     qtbot.waitUntil(bench.solving.is_set)
     worker.close()
     assert worker._thread.isFinished()
+
+
+def test_a_worker_closed_before_it_was_started_never_starts(qapp):
+    del qapp
+    made = Worker(load=lambda: Study(SimpleNamespace, None, None))
+    made.close()
+    made.start()
+    assert not made._thread.isRunning()
