@@ -7,9 +7,10 @@ from modalview.assembly.locks import speed_ratios
 from modalview.errors import Fault, ModelFaultsError
 from modalview.model.parts import Excitation, Machine, Margin, Model, SpeedRange
 from modalview.resonance.results import Band
-from modalview.units.show import significant
 
 RAD_PER_HZ = 2 * math.pi
+# From here on four digits do not hold a whole number of Hz.
+FOUR_DIGITS = 9999.5
 
 
 def bands(model: Model) -> tuple[Band, ...]:
@@ -63,7 +64,8 @@ def _band(model: Model, machine: Machine, excitation: Excitation) -> Band:
 def excitation_label(excitation: Excitation) -> str:
     """Return a short label: "1×", "7× vane pass", "100 Hz line"."""
     if excitation.frequency is not None:
-        head = f"{significant(excitation.frequency.si / RAD_PER_HZ, 4).rstrip('0').rstrip('.')} Hz"
+        frequency = excitation.frequency.si / RAD_PER_HZ
+        head = f"{frequency:.4g} Hz" if frequency < FOUR_DIGITS else f"{frequency:.0f} Hz"
     else:
         head = f"{excitation.order:g}×"
     return f"{head} {excitation.name}" if excitation.name else head

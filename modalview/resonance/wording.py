@@ -5,6 +5,9 @@ import math
 from modalview.resonance.results import Band
 from modalview.units.show import significant
 
+# Below this share one decimal of a per cent would say nothing.
+LEAST_PERCENT = 0.001
+
 
 def hz(omega: float, digits: int = 3) -> str:
     """Return an angular frequency (rad/s) as Hz with its unit."""
@@ -35,5 +38,8 @@ def modes_text(number: int) -> str:
 
 
 def percent(share: float) -> str:
-    """Return a signed share as per cent: "+4.3 %"."""
-    return f"{100 * share:+.1f} %".replace("-", "−")
+    """Return a signed share as per cent: "+4.3 %", "−0.02 %", "0 %"."""
+    if share == 0:
+        return "0 %"
+    digits = f"{100 * share:+.1f}" if abs(share) >= LEAST_PERCENT else f"{100 * share:+.1g}"
+    return f"{digits} %".replace("-", "−")

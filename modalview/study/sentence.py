@@ -5,7 +5,7 @@ from collections.abc import Sequence
 
 from modalview.model.parts import Machine, Model, SpeedRange
 from modalview.resonance.results import Check, Drive, Verdict
-from modalview.resonance.separation import separation
+from modalview.resonance.separation import nearest, separation
 from modalview.resonance.wording import hz_range, margin_text, percent
 from modalview.study.results import FoundMode
 from modalview.units.show import significant
@@ -56,8 +56,7 @@ def speed_text(machine: Machine) -> str:
 def _in_full(model: Model, check: Check, modes: Sequence[FoundMode]) -> str:
     head = excitation_text(model, check)
     at_nominal = check.verdict is Verdict.IN_BAND
-    number = check.nearest_mode if at_nominal else check.worst_mode
-    mode = next((m for m in modes if m.number == number), None)
+    mode = _deciding_mode(check, modes)
     if mode is None or check.undecided:
         return f"{head}: {check.reason}."
     found = f"mode {mode.number} at {significant(mode.frequency_hz, 3)} Hz"
@@ -67,12 +66,36 @@ def _in_full(model: Model, check: Check, modes: Sequence[FoundMode]) -> str:
     place = _place(check, mode)
     wanted = f"{margin_text(check.band.margin)} is wanted"
     if at_nominal:
-        return f"{head}: {found} {place}{_faint(check)}; {wanted}."
-    return f"{head}: {found} {place}, but over tolerance {_reach(check)}; {wanted}."
+        others = f", one of {check.inside} modes in the band" if check.inside and check.inside > 1 else ""
+        return f"{head}: {found} {place}{others}{_faint(check)}; {wanted}."
+    return f"{head}: {found} {place}, but {_reach(check)}; {wanted}."
+
+
+def _deciding_mode(check: Check, modes: Sequence[FoundMode]) -> FoundMode | None:
+    """Return the mode that a verdict rests on.
+
+    Of those in the band the nearest; a mode nearer still may lie outside where the margins are uneven.
+    """
+    number = check.worst_mode
+    if check.verdict is Verdict.IN_BAND:
+        low, high = (edge / (2 * math.pi) for edge in check.band.nominal)
+        inside = [
+            (m.number, (m.frequency_hz, m.frequency_hz))
+            for m in modes
+            if m.kind == "elastic" and low <= m.frequency_hz <= high
+        ]
+        found = nearest(inside, _excitation_hz(check))
+        number = found[0] if found else check.nearest_mode
+    return next((m for m in modes if m.number == number), None)
+
+
+def _excitation_hz(check: Check) -> tuple[float, float]:
+    low, high = check.band.excitation
+    return low / (2 * math.pi), high / (2 * math.pi)
 
 
 def _place(check: Check, mode: FoundMode) -> str:
-    low, high = (edge / (2 * math.pi) for edge in check.band.excitation)
+    low, high = _excitation_hz(check)
     apart = separation((mode.frequency_hz, mode.frequency_hz), (low, high))
     if apart == 0:
         return "lies within the excitation range" if high > low else "lies on it"
@@ -83,8 +106,8 @@ def _reach(check: Check) -> str:
     if check.deciding_case is None:
         return "the speed tolerance alone brings it into the band"
     if check.worst_separation:
-        return f"it comes to {percent(check.worst_separation)} ({check.deciding_case})"
-    return f"it reaches the excitation itself ({check.deciding_case})"
+        return f"over tolerance it comes to {percent(check.worst_separation)} ({check.deciding_case})"
+    return f"over tolerance it reaches the excitation itself ({check.deciding_case})"
 
 
 def _faint(check: Check) -> str:
