@@ -75,3 +75,22 @@ def test_functions_of_developers_md_stand_where_it_says():
         if not re.search(rf"(?:def|class) {one}\b", (ROOT / path).read_text(encoding="utf-8"))
     ]
     assert wrong == []
+
+
+@pytest.mark.parametrize("command", ["check", "bounds", "modes"])
+def test_every_key_of_the_documents_is_told(command, capsys):
+    model = ROOT / "demo_models/1-cooling-water-pump/as-built.keepclear"
+    main([command, "--json", str(model)])
+    document = json.loads(capsys.readouterr().out)
+    told = set(re.findall(r"`(\w+)`", README.partition("## JSON\n")[2].partition("\n## ")[0]))
+    assert {key for key in _keys(document) if key not in told} == set()
+
+
+def _keys(item):
+    """Yield the keys of a document; those of shapes and of shares by direction are names of the model."""
+    for key, inner in item.items() if isinstance(item, dict) else ():
+        yield key
+        if key not in {"shape", "effective_mass"}:
+            yield from _keys(inner)
+    for one in item if isinstance(item, list) else ():
+        yield from _keys(one)
