@@ -51,8 +51,10 @@ class Coordinates:
         One for each coordinate: the body whose cluster carries it, and the freedom.
     to_bodies : csr_array (bodies * freedoms, n)
         Motion of every body's freedoms, in the order of the model, from the coordinates.
+    released : csr_array (bodies * freedoms, d)
+        The same from the massless directions left out, which no spring resists; a dashpot may.
     unrounded : mapping
-        Entries of ``to_bodies`` that no double holds, by row and column, exactly.
+        Entries of ``to_bodies``, then of ``released``, that no double holds, by row and column, exactly.
     massless : bool array (n,)
     substitutions : tuple of (Freedom, mapping)
         Massless directions that were split off or left out, in order; see :meth:`of_motion`.
@@ -66,6 +68,7 @@ class Coordinates:
 
     free: tuple[Freedom, ...]
     to_bodies: sp.csr_array
+    released: sp.csr_array
     unrounded: Mapping[tuple[int, int], Fraction]
     massless: np.ndarray
     substitutions: tuple[tuple[Freedom, Mapping[Freedom, Fraction]], ...]
@@ -163,10 +166,11 @@ def independent_coordinates(model: Model) -> Coordinates:
         raise ModelFaultsError(
             (Fault("model", "no motion is left: every direction is held, locked or massless"),)
         )
-    to_bodies, unrounded = _to_bodies(model, frames, solved, split, left)
+    table, unrounded = _to_bodies(model, frames, solved, (split, dropped), left)
     return Coordinates(
         free=left,
-        to_bodies=to_bodies,
+        to_bodies=sp.csr_array(table[:, : len(left)]),
+        released=sp.csr_array(table[:, len(left) :]),
         unrounded=unrounded,
         massless=np.array([key in massless for key in left]),
         substitutions=(*split, *dropped),
@@ -335,21 +339,23 @@ def _to_bodies(
     model: Model,
     frames: _Frames,
     solved: Mapping[Freedom, ExactForm],
-    split: Sequence[tuple[Freedom, ExactForm]],
+    turns: tuple[Sequence[tuple[Freedom, ExactForm]], Sequence[tuple[Freedom, ExactForm]]],
     left: Sequence[Freedom],
 ) -> tuple[sp.csr_array, dict[tuple[int, int], Fraction]]:
-    column = {key: place for place, key in enumerate(left)}
+    """Return the motion of every body's freedoms from the coordinates, then from the directions left out."""
+    split, dropped = turns
+    column = {key: place for place, key in enumerate([*left, *(pivot for pivot, _ in dropped)])}
     rows, cols, entries = [], [], []
     unrounded = {}
     names = FREEDOMS[model.motion]
     for row, (body, name) in enumerate((b, f) for b in model.bodies for f in names):
         form = _split_through(_through(frames.form((body.id, name)), solved), split)
-        for key, entry in form.items():
+        for key, entry in _split_through(form, dropped).items():
             if key in column:
                 rows.append(row)
                 cols.append(column[key])
                 entries.append(float(entry))
                 if float(entry) != entry:
                     unrounded[row, column[key]] = entry
-    shape = (len(model.bodies) * len(names), len(left))
+    shape = (len(model.bodies) * len(names), len(column))
     return sp.csr_array((entries, (rows, cols)), shape=shape, dtype=float), unrounded

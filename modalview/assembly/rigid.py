@@ -1,6 +1,6 @@
 """Rigid-body motions: what moves without stretching anything, their number exact."""
 
-from collections.abc import Sequence
+from collections.abc import Container, Sequence
 from fractions import Fraction
 
 import numpy as np
@@ -130,14 +130,19 @@ def _independent(columns: Array) -> Array:
     return np.asarray(q[:, size > 1e-9 * max(float(size.max(initial=0.0)), 1e-300)], dtype=float)
 
 
-def exact_rank(model: Model, coordinates: Coordinates) -> int:
-    """Return the rank of the stiffness rows from the numbers as typed, over a large prime field."""
+def exact_rank(
+    model: Model, coordinates: Coordinates, families: Container[str] = frozenset({"stiffness"})
+) -> int:
+    """Return the rank of the rows of springs ("stiffness"), dashpots ("damping") or both.
+
+    From the numbers as typed, over a large prime field; directions left out of the coordinates included.
+    """
     exact = places(model, exact=True)
     basis = _exact_columns(coordinates, model)
     solved: dict[int, dict[int, int]] = {}
     for link in model.links:
         for term in stretches(link, exact):
-            if term.family == "stiffness":
+            if term.family in families:
                 _insert(_modular(term.form, basis), solved)
     return len(solved)
 
@@ -145,7 +150,7 @@ def exact_rank(model: Model, coordinates: Coordinates) -> int:
 def _exact_columns(coordinates: Coordinates, model: Model) -> dict[tuple[str, str], dict[int, int]]:
     """Return the motion of every body freedom from the coordinates, over the prime field."""
     names = FREEDOMS[model.motion]
-    table = coordinates.to_bodies
+    table = sp.csr_array(sp.hstack([coordinates.to_bodies, coordinates.released]))
     keys = [(body.id, name) for body in model.bodies for name in names]
     return {
         key: {
