@@ -2,10 +2,12 @@
 
 from typing import Any
 
-from PySide6.QtCore import QObject, Signal, Slot
+from PySide6.QtCore import QObject, QTimer, Signal, Slot
 
 from modalview.model.parts import Model
 from modalview.ui.worker import Answer, Find, Step, Worker
+
+BLINK_MS = 120
 
 
 class Analysis(QObject):
@@ -27,6 +29,9 @@ class Analysis(QObject):
         self.looking = False
         self.finding = False
         self.progress: tuple[str, float] = ("", 0.0)
+        # Modes found again in a blink replace the old ones in one step, without a pale moment between.
+        self._patience = QTimer(self, interval=BLINK_MS, singleShot=True)
+        self._patience.timeout.connect(self.solution_changed)
         worker.answered.connect(self._on_answered)
 
     @property
@@ -36,6 +41,7 @@ class Analysis(QObject):
 
     def forget(self) -> None:
         """Drop what is known: another model was opened."""
+        self._patience.stop()
         self._model = self.outlook = self.solution = self.refusal = None
         self._set_finding(False)
         self.outlook_changed.emit()
@@ -44,7 +50,10 @@ class Analysis(QObject):
     def follow(self, model: Model) -> None:
         """Study an edited model."""
         self._order(model, Find.IF_SMALL if self.automatic else Find.NEVER)
-        self.solution_changed.emit()  # the modes shown are out of date from here on
+        if not self.automatic or self.solution is None:
+            self.solution_changed.emit()  # the modes shown are out of date from here on
+        else:
+            self._patience.start()
 
     def find(self) -> None:
         """Find the modes of the model on the sheet, whatever its size."""
@@ -73,13 +82,15 @@ class Analysis(QObject):
         match answer.step:
             case Step.LOOKED:
                 self.outlook, self.refusal, self.looking = answer.content, None, False
-                self.outlook_changed.emit()
+                if not self._patience.isActive():
+                    self.outlook_changed.emit()
             case Step.FINDING:
                 self._set_finding(True)
             case Step.PROGRESSED:
                 self.progress = answer.content
                 self.busy_changed.emit()
             case Step.SOLVED:
+                self._patience.stop()
                 self.solution = answer.content
                 self._set_finding(False)
                 self.solution_changed.emit()
@@ -92,6 +103,7 @@ class Analysis(QObject):
                 self.failed.emit(answer.content)
 
     def _refuse(self, error: Exception) -> None:
+        self._patience.stop()
         if self.looking:  # not even the outlook is there
             self.outlook, self.looking = None, False
         self.refusal = error

@@ -46,6 +46,7 @@ class ModeCard(QStyledItemDelegate):
         self.factor = 1.0  # where the small pictures stand in their swing, -1..1
         # By size in pixels: cards with a longer name or fewer shares leave their picture another height.
         self._small: dict[tuple[int, int], Any] = {}
+        self._drawn: Any = None
         self._posed: dict[tuple[int, tuple[int, int]], Any] = {}
         self._still: dict[tuple[int, _Now], tuple[QPixmap, QRectF]] = {}
 
@@ -56,8 +57,11 @@ class ModeCard(QStyledItemDelegate):
 
     def set_model(self, model: Model | None) -> None:
         """Draw the small pictures of another model."""
+        drawn = _drawn(model)
+        if drawn != self._drawn:
+            self._drawn = drawn
+            self._small.clear()
         self._model = model
-        self._small.clear()
         self._posed.clear()
         self._still.clear()
 
@@ -164,8 +168,10 @@ class ModeCard(QStyledItemDelegate):
         if mode.kinetic:
             lead = mode.kinetic[0]
             place = QRectF(inner.left(), inner.bottom() - line, inner.width(), line)
-            text = f"mass: {lead.label} {percent(lead.fraction)}"
-            self._write(painter, place, text, self._theme.quiet, font=small)
+            figure = QFontMetricsF(small).horizontalAdvance("100 %") + 4
+            name = place.adjusted(0, 0, -figure, 0)
+            self._write(painter, name, f"mass: {lead.label}", self._theme.quiet, font=small)
+            self._write(painter, place, percent(lead.fraction), self._theme.quiet, small, _RIGHT)
         return top - 2
 
     def _paint_bar(self, painter: QPainter, row: QRectF, share: Any, font: QFont) -> None:
@@ -216,3 +222,17 @@ class ModeCard(QStyledItemDelegate):
         shown = painter.fontMetrics().elidedText(text, Qt.TextElideMode.ElideRight, int(place.width()))
         painter.drawText(place, align, shown)
         painter.setFont(kept)
+
+
+def _drawn(model: Model | None) -> Any:
+    """Return what of a model a small picture shows: a changed stiffness needs no new one."""
+    if model is None:
+        return None
+    links = tuple(
+        (type(one), one.from_, one.to, *(getattr(one, name, None) for name in _SHAPES)) for one in model.links
+    )
+    return model.motion, model.bodies, model.supports, links
+
+
+# Fields of links, other than their ends, that change how they are drawn.
+_SHAPES = ("direction", "axes", "axis", "ratio", "teeth", "pitch_radius", "directions")

@@ -1,10 +1,11 @@
 """The row of found modes under the sheet; the chosen one moves there."""
 
 import math
+from time import perf_counter
 from typing import Any
 
 from PySide6.QtCore import QElapsedTimer, QModelIndex, Qt, QTimer, Signal
-from PySide6.QtGui import QResizeEvent
+from PySide6.QtGui import QPaintEvent, QResizeEvent
 from PySide6.QtWidgets import QAbstractItemView, QFrame, QLabel, QListView, QStackedLayout, QWidget
 
 from modalview.model.parts import Model
@@ -15,6 +16,8 @@ from modalview.ui.theme import Theme
 
 # The small pictures need fewer frames than the sheet.
 FRAME_MS = 40
+# Painting them takes at most this share of the time.
+MOST_SHARE = 0.12
 SWING_S = 1.6
 
 
@@ -68,6 +71,13 @@ class ModeRow(QListView):
             self._timer.stop()
             self.card.factor = 1.0
             self.viewport().update()
+
+    def paintEvent(self, event: QPaintEvent) -> None:  # noqa: N802  (Qt's name)
+        """Paint, and move slower where that takes long: the rest of the window comes first."""
+        start = perf_counter()
+        super().paintEvent(event)
+        took_ms = 1000 * (perf_counter() - start)
+        self._timer.setInterval(max(FRAME_MS, round(took_ms / MOST_SHARE)))
 
     def _on_frame(self) -> None:
         self._phase_s += self._clock.restart() / 1000

@@ -9,7 +9,7 @@ from PySide6.QtWidgets import QAbstractItemView, QHeaderView, QTableView, QWidge
 from modalview.errors import InputError
 from modalview.ui.document import Document
 from modalview.ui.theme import LIGHT, Theme
-from modalview.ui.values import ValueRow, value_rows
+from modalview.ui.values import ValueRow, ValueRows
 
 _Index = QModelIndex | QPersistentModelIndex
 PART, WHAT, TYPED, CONVERTED, TOLERANCE = range(5)
@@ -26,12 +26,13 @@ class PartTableModel(QAbstractTableModel):
         super().__init__(parent)
         self._document = document
         self.rows: list[ValueRow] = []
+        self._memory = ValueRows()
         self._refusals: dict[tuple[Any, int], tuple[str, str]] = {}
         self._theme: Theme = LIGHT
 
     def show_model(self, model: Any, *, anew: bool) -> None:
         """Show the lines of a model; ``anew`` drops the refused entries of another one."""
-        rows = value_rows(model)
+        rows = self._memory.of(model)
         same = not anew and [row.address for row in rows] == [row.address for row in self.rows]
         if same:
             self.rows = rows

@@ -14,6 +14,7 @@ from modalview.ui import settings as names
 from modalview.ui.app import application, new_window
 from modalview.ui.settings import Settings
 from modalview.ui.window import Window
+from modalview.ui.worker import SMALL_MODEL
 
 _PATIENCE_S = 120.0
 _SETTLE_S = 0.15
@@ -88,8 +89,12 @@ def _settings(folder: Path, look: Look) -> Settings:
 
 
 def _settled(window: Window) -> bool:
-    known = window.analysis.outlook is not None or window.analysis.refusal is not None
-    return known and not window.analysis.looking and not window.analysis.finding
+    analysis = window.analysis
+    if analysis.refusal is not None or analysis.looking:
+        return analysis.refusal is not None
+    # Between the outlook and the modes of a small model nothing is under way for a moment.
+    wanted = analysis.automatic and analysis.outlook.assembly.pencil().n <= SMALL_MODEL
+    return analysis.solution_current or not (wanted or analysis.finding)
 
 
 def _arrange(window: Window, look: Look) -> None:
@@ -108,7 +113,7 @@ def _wait(program: QApplication, ready: Callable[[], bool]) -> None:
         if not last and (ready() or time.monotonic() > end):
             last.append(time.monotonic())
         if last and time.monotonic() > last[0] + _SETTLE_S:
-            program.quit()
+            program.exit()  # unlike quit, leaves the window open
 
     timer = QTimer(interval=10)
     timer.timeout.connect(on_time)

@@ -2,6 +2,7 @@
 
 import math
 from dataclasses import replace
+from time import perf_counter
 from typing import Any
 
 from PySide6.QtCore import QElapsedTimer, QPoint, QPointF, Qt, QTimer, Signal
@@ -13,6 +14,10 @@ from modalview.ui.canvas import paint_drawing, painted
 from modalview.ui.theme import LIGHT, Theme
 
 FRAME_MS = 16
+# An edited model is laid out anew when its verdict is shown, or after the longer time.
+SOON_MS, LATER_MS = 15, 250
+# Painting a frame takes at most this share of the time.
+MOST_SHARE = 0.35
 # Real frequencies are too fast to follow; every mode swings once in this time.
 SWING_S = 1.6
 # One notch of a wheel (120 units of an eighth of a degree) enlarges by so much.
@@ -43,6 +48,9 @@ class Sheet(QWidget):
         self._clock = QElapsedTimer()
         self._timer = QTimer(self, interval=FRAME_MS, timerType=Qt.TimerType.PreciseTimer)
         self._timer.timeout.connect(self._on_frame)
+        # The verdict of an edit comes first: laying out a large sheet takes longer than counting.
+        self._later = QTimer(self, singleShot=True)
+        self._later.timeout.connect(self._rebuild)
         self._drag: QPoint | None = None
         self._space = False
         self.setMinimumSize(320, 200)
@@ -63,7 +71,14 @@ class Sheet(QWidget):
         if fit:
             self._view = None
             self._selected = None
-        self._rebuild()
+            self._rebuild()
+        else:
+            self._later.start(LATER_MS)
+
+    def catch_up(self) -> None:
+        """Lay an edited model out now that its verdict is known."""
+        if self._later.isActive():
+            self._later.start(SOON_MS)
 
     def show_title(self, title: Any) -> None:
         """Fill the title block (drawing.furniture.TitleLines)."""
@@ -121,6 +136,7 @@ class Sheet(QWidget):
     # Building
 
     def _rebuild(self) -> None:
+        self._later.stop()
         if self._model is None:
             return
         from modalview.drawing import sheet  # noqa: PLC0415  (numpy comes after the first paint)
@@ -163,6 +179,12 @@ class Sheet(QWidget):
     def paintEvent(self, event: QPaintEvent) -> None:  # noqa: N802  (Qt's name)
         """Paint the cached sheet and, over it, the frame of the moving mode."""
         del event
+        start = perf_counter()
+        self._paint()
+        took_ms = 1000 * (perf_counter() - start)
+        self._timer.setInterval(max(FRAME_MS, round(took_ms / MOST_SHARE)))
+
+    def _paint(self) -> None:
         painter = QPainter(self)
         if self._geometry is None:
             return

@@ -2,6 +2,7 @@
 
 from collections.abc import Iterator
 from dataclasses import dataclass
+from typing import Any
 
 from modalview.model.addresses import Address, look
 from modalview.model.editable import EditableField, editable_fields
@@ -72,9 +73,24 @@ def converted(si: float, quantity: Quantity) -> str:
     return f"{mantissa}{e}{power} {quantity.si_unit}"
 
 
-def value_rows(model: Model) -> list[ValueRow]:
-    """Return every line of the parts table: parts in the order of the file, the model's own at the end."""
-    return list(_all_rows(model))
+class ValueRows:
+    """Every line of the parts table; lines of parts that an edit left alone are kept."""
+
+    def __init__(self) -> None:
+        self._kept: dict[Address, tuple[Any, tuple[Any, ...], tuple[ValueRow, ...]]] = {}
+
+    def of(self, model: Model) -> list[ValueRow]:
+        """Return the lines: parts in the order of the file, the model's own at the end."""
+        kept, self._kept = self._kept, {}
+        rows: list[ValueRow] = []
+        for address, part, name, part_id in _parts(model):
+            context = (name, model.motion, model.default_tolerance)
+            before = kept.get(address)
+            if before is None or before[0] is not part or before[1] != context:
+                before = part, context, tuple(_rows_of(model, address, name, part_id))
+            self._kept[address] = before
+            rows.extend(before[2])
+        return rows
 
 
 def machine_rows(model: Model, machine: Machine) -> list[ValueRow]:
@@ -83,18 +99,19 @@ def machine_rows(model: Model, machine: Machine) -> list[ValueRow]:
     return [row for row in rows if row.address[2] in _IN_FORM]
 
 
-def _all_rows(model: Model) -> Iterator[ValueRow]:
+def _parts(model: Model) -> Iterator[tuple[Address, Any, str, str]]:
+    """Walk over what has lines of its own: address, part, name and id."""
     for kind in ("bodies", "links", "supports", "machines"):
         for part in getattr(model, kind):
             address = (kind, part.id)
-            yield from _rows_of(model, address, part.name or part.id, part.id)
+            yield address, part, part.name or part.id, part.id
             for excitation in part.excitations if isinstance(part, Machine) else ():
                 name = f"{part.name or part.id}, {excitation.name or excitation.id}"
-                yield from _rows_of(model, (*address, "excitations", excitation.id), name, part.id)
+                yield (*address, "excitations", excitation.id), excitation, name, part.id
     for kind in ("measured", "limits"):
         for part in getattr(model, kind):
-            yield from _rows_of(model, (kind, part.id), part.id, part.id)
-    yield from _rows_of(model, (), "model", "")
+            yield (kind, part.id), part, part.id, part.id
+    yield (), model, "model", ""
 
 
 def _rows_of(model: Model, address: Address, part: str, part_id: str) -> Iterator[ValueRow]:

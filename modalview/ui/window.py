@@ -141,6 +141,7 @@ class Window(Frame):
             self.modes.show_analysis(self.analysis)
         self.results.show_results()
         self.status.show_state(self.document, self.analysis)
+        self.sheet.catch_up()
 
     def show_modes(self) -> None:
         """Show the modes found, and mark those of an older model."""
