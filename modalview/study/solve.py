@@ -1,7 +1,7 @@
 """The modes of a model, their ranges over all tolerances, and what they add to the checks."""
 
 from collections.abc import Sequence
-from dataclasses import replace
+from functools import partial
 from time import perf_counter
 
 import numpy as np
@@ -16,7 +16,7 @@ from modalview.eigen.solve import find_modes
 from modalview.model.parts import Model
 from modalview.resonance.drive import mode_drives
 from modalview.resonance.results import Check, ModeDrive
-from modalview.resonance.separation import nearest
+from modalview.study.completed import ELASTIC, RIGID, UNSTABLE, completed
 from modalview.study.look import RAD_PER_HZ, look
 from modalview.study.names import mode_name
 from modalview.study.results import FoundMode, Outlook, Request, Share, Solution
@@ -32,8 +32,6 @@ from modalview.study.shares import (
 )
 
 Array = npt.NDArray[np.float64]
-
-RIGID, ELASTIC, UNSTABLE = "rigid-body", "elastic", "unstable"
 
 
 def solve(request: Request, outlook: Outlook | None = None) -> Solution:
@@ -58,7 +56,10 @@ def solve(request: Request, outlook: Outlook | None = None) -> Solution:
     raw = _find(request, assembly, Case.NOMINAL, 0)
     ranges = _ranges(request, assembly, raw)
     modes = _found(assembly, raw, ranges)
-    checks = tuple(_completed(request.model, assembly, check, raw, modes) for check in outlook.checks)
+    checks = tuple(
+        completed(check, modes, partial(_drives, request.model, assembly, check, raw))
+        for check in outlook.checks
+    )
     return Solution(
         outlook=outlook,
         raw=raw,
@@ -159,35 +160,6 @@ def _effective_masses(assembly: Assembly, raw: Modes) -> list[tuple[Share, ...]]
     whole = np.einsum("ik,ik->k", directions, np.asarray(pencil.M @ directions))
     shares = np.divide(masses, whole, out=np.zeros_like(masses), where=whole > 0)
     return [tuple(Share(name, name, float(s)) for name, s in zip(names, row, strict=True)) for row in shares]
-
-
-def _completed(
-    model: Model, assembly: Assembly, check: Check, raw: Modes, modes: Sequence[FoundMode]
-) -> Check:
-    """Add the nearest mode, the separations, the deciding mode and the drives to a check."""
-    elastic = [mode for mode in modes if mode.kind == ELASTIC]
-    band = check.band
-    excitation = (band.excitation[0] / RAD_PER_HZ, band.excitation[1] / RAD_PER_HZ)
-    now = nearest(((m.number, (m.frequency_hz, m.frequency_hz)) for m in elastic), excitation)
-    if now is None:
-        return check
-    low, high = (edge / RAD_PER_HZ for edge in band.tolerance)
-    widened = (low / (1 - band.margin[0]), high / (1 + band.margin[1]))
-    reaching = [mode for mode in elastic if mode.range_hz[1] >= low and mode.range_hz[0] <= high]
-    worst = nearest(((m.number, m.range_hz) for m in reaching or elastic), widened) or now
-    deciding = check.deciding_case
-    if deciding is not None and reaching:
-        # Both cases may bring a mode in: name the one of the mode that comes nearest.
-        deciding = "stiff-light" if modes[worst[0] - 1].frequency_hz < excitation[0] else "soft-heavy"
-    return replace(
-        check,
-        nearest_mode=now[0],
-        separation=now[1],
-        worst_separation=worst[1],
-        worst_mode=worst[0],
-        deciding_case=deciding,
-        drives=_drives(model, assembly, check, raw, [mode.number for mode in reaching] or [now[0]]),
-    )
 
 
 def _drives(
