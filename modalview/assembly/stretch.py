@@ -5,7 +5,7 @@ rows in doubles and, with fractions, their exact rank.
 """
 
 from collections.abc import Callable, Iterator
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 from fractions import Fraction
 
 from modalview.assembly.directions import across, axes_vectors, direction_vector, length
@@ -46,20 +46,33 @@ class Stretch:
     family : str
         "stiffness" or "damping".
     form : Form
-        Stretch times ``divide``, as a form in the freedoms of bodies and supports.
-    divide : float
-        Length that normalises the form.
+        Stretch times the length of ``over``, as a form in the freedoms of bodies and supports.
+    over : Vector
+        The form is divided by the length of this vector.
     keys : tuple of str
         Fields of the link whose product is the term's value ("E", "I" of a beam, "stiffness.x").
-    factor : float
-        Constant beside that product, such as 3 / L.
+    times : int
+        Constant beside that product, such as 3 of 3 / L.
+    per : Vector or None
+        That constant is divided by the length of this vector.
     """
 
     family: str
     form: Form
-    divide: float
+    over: Vector
     keys: tuple[str, ...]
-    factor: float = 1.0
+    times: int = 1
+    per: Vector | None = None
+
+    @property
+    def divide(self) -> float:
+        """Length that normalises the form."""
+        return length(self.over)
+
+    @property
+    def factor(self) -> float:
+        """Constant beside the product of the fields, such as 3 / L."""
+        return self.times if self.per is None else self.times / length(self.per)
 
 
 def acting_point(link: Link, places: Places) -> Vector:
@@ -86,32 +99,32 @@ def relative_turn(link: Link, places: Places, axis: Vector) -> Form:
     return combined(((1, places.turns(end, axis)), (-1, places.turns(start, axis))))
 
 
-def _along(link: Spring | Damper, places: Places) -> tuple[Form, float]:
+def _along(link: Spring | Damper, places: Places) -> tuple[Form, Vector]:
     if places.motion is Motion.SINGLE_AXIS:
-        return relative_motion(link, places, acting_point(link, places), AXES["y"]), 1.0
+        return relative_motion(link, places, acting_point(link, places), AXES["y"]), AXES["y"]
     if link.direction is not None:
         line = direction_vector(link.direction, places)
-        return relative_motion(link, places, acting_point(link, places), line), length(line)
+        return relative_motion(link, places, acting_point(link, places), line), line
     start, end = places.point(link.from_), places.point(link.to)
     line = minus(end, start)
     moves = (
         (1, places.moves(places.part(link.to), end, line)),
         (-1, places.moves(places.part(link.from_), start, line)),
     )
-    return combined(moves), length(line)
+    return combined(moves), line
 
 
 def _spring(link: Spring, places: Places) -> Iterator[Stretch]:
-    form, divide = _along(link, places)
-    yield Stretch("stiffness", form, divide, ("stiffness",))
+    form, line = _along(link, places)
+    yield Stretch("stiffness", form, line, ("stiffness",))
 
 
 def _damper(link: Damper, places: Places) -> Iterator[Stretch]:
     if places.motion is Motion.SHAFT_TRAIN:
-        yield Stretch("damping", relative_turn(link, places, AXES["z"]), 1.0, ("damping",))
+        yield Stretch("damping", relative_turn(link, places, AXES["z"]), AXES["z"], ("damping",))
         return
-    form, divide = _along(link, places)
-    yield Stretch("damping", form, divide, ("damping",))
+    form, line = _along(link, places)
+    yield Stretch("damping", form, line, ("damping",))
 
 
 def _mount(link: Mount, places: Places) -> Iterator[Stretch]:
@@ -123,11 +136,11 @@ def _mount(link: Mount, places: Places) -> Iterator[Stretch]:
         for name, axis in zip(TRANSLATIONS, axes, strict=True):
             if getattr(group, name) is not None:
                 form = relative_motion(link, places, at, axis)
-                yield Stretch(family, form, length(axis), (f"{family}.{name}",))
+                yield Stretch(family, form, axis, (f"{family}.{name}",))
         for name, axis in zip(ROTATIONS, axes, strict=True):
             if getattr(group, name) is not None:
                 form = relative_turn(link, places, axis)
-                yield Stretch(family, form, length(axis), (f"{family}.{name}",))
+                yield Stretch(family, form, axis, (f"{family}.{name}",))
 
 
 def rotation_axis(link: Shaft | Gear, places: Places) -> Vector:
@@ -139,7 +152,7 @@ def rotation_axis(link: Shaft | Gear, places: Places) -> Vector:
 
 def _shaft(link: Shaft, places: Places) -> Iterator[Stretch]:
     axis = rotation_axis(link, places)
-    yield Stretch("stiffness", relative_turn(link, places, axis), length(axis), ("stiffness",))
+    yield Stretch("stiffness", relative_turn(link, places, axis), axis, ("stiffness",))
 
 
 def gear_ratio(link: Gear) -> Fraction:
@@ -161,14 +174,13 @@ def _gear(link: Gear, places: Places) -> Iterator[Stretch]:
     other = radius / _ratio(link, places)
     start, end = places.part(link.from_), places.part(link.to)
     form = combined(((radius, places.turns(start, axis)), (-other, places.turns(end, axis))))
-    yield Stretch("stiffness", form, length(axis), ("stiffness",))
+    yield Stretch("stiffness", form, axis, ("stiffness",))
 
 
 def _beam(link: Beam, places: Places) -> Iterator[Stretch]:
     start, end = places.point(link.from_), places.point(link.to)
     line = minus(end, start)
-    span = length(line)
-    yield Stretch("stiffness", _ends_apart(link, places, line), span, ("E", "A"), 1 / span)
+    yield Stretch("stiffness", _ends_apart(link, places, line), line, ("E", "A"), per=line)
     if places.motion is not Motion.SPACE:
         side: Vector = (-line[1], line[0], 0)
         yield from _bending(link, places, line, side, AXES["z"], "I")
@@ -177,7 +189,7 @@ def _beam(link: Beam, places: Places) -> Iterator[Stretch]:
     z = cross(line, y)
     yield from _bending(link, places, line, y, z, "Iz")
     yield from _bending(link, places, line, z, (-y[0], -y[1], -y[2]), "Iy")
-    yield Stretch("stiffness", relative_turn(link, places, line), span, ("G", "J"), 1 / span)
+    yield Stretch("stiffness", relative_turn(link, places, line), line, ("G", "J"), per=line)
 
 
 def _any_side(line: Vector) -> Vector:
@@ -205,9 +217,8 @@ def _bending(
     ``axis``, deflections along ``side``, where axis = line x side up to a factor.
     Slope-deflection relations of a slender beam (Euler-Bernoulli), from memory.
     """
-    span, across_axis = length(line), length(axis)
     start, end = places.part(link.from_), places.part(link.to)
-    yield Stretch("stiffness", relative_turn(link, places, axis), across_axis, ("E", second_moment), 1 / span)
+    yield Stretch("stiffness", relative_turn(link, places, axis), axis, ("E", second_moment), per=line)
     # chord = (side . du) / (|side| L). Turned into the scale of the axis it is
     # (side . du) (axis . (line x side)) / (|side|^2 |line|^2), free of roots.
     turned = dot(axis, cross(line, side))
@@ -219,7 +230,7 @@ def _bending(
             (-weight, _ends_apart(link, places, side)),
         )
     )
-    yield Stretch("stiffness", form, across_axis, ("E", second_moment), 3 / span)
+    yield Stretch("stiffness", form, axis, ("E", second_moment), 3, line)
 
 
 def _rigid(_link: RigidLink, _places: Places) -> Iterator[Stretch]:
@@ -245,7 +256,7 @@ def stretches(link: Link, places: Places) -> list[Stretch]:
 
 def _reduced(term: Stretch, freedoms: tuple[str, ...]) -> Stretch:
     form = {freedom: entry for freedom, entry in term.form.items() if freedom[1] in freedoms}
-    return Stretch(term.family, form, term.divide, term.keys, term.factor)
+    return replace(term, form=form)
 
 
 def exact_joints(link: Link, places: Places) -> list[Form]:
