@@ -97,7 +97,8 @@ def style_sheet(theme: Theme, point_size: float) -> str:
         "verdict": f"{1.3 * point_size:.1f}pt",
         "sentence": f"{1.1 * point_size:.1f}pt",
     }
-    return template.substitute(asdict(theme), **sizes)
+    tick = (resources() / f"tick-{theme.name}.svg").as_posix()
+    return template.substitute(asdict(theme), tick=tick, **sizes)
 
 
 def palette(theme: Theme) -> QPalette:
@@ -128,7 +129,7 @@ def palette(theme: Theme) -> QPalette:
 
 def token_names() -> tuple[str, ...]:
     """Return the names a style sheet may use."""
-    return (*(one.name for one in fields(Theme)), "text", "small", "heading", "verdict", "sentence")
+    return (*(one.name for one in fields(Theme)), "text", "small", "heading", "verdict", "sentence", "tick")
 
 
 def apply_theme(application: QApplication, choice: str, text_percent: int) -> Theme:
