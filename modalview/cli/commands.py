@@ -122,7 +122,7 @@ def _prepare_picture(parser: argparse.ArgumentParser) -> None:
     parser.add_argument("-o", "--output", type=Path, required=True, metavar="OUT.png", help="where it goes")
     parser.add_argument("--of", choices=PICTURES, default="sheet", help="what it shows (default: sheet)")
     parser.add_argument("--mode", type=int, metavar="N", help="the mode shown, from 1 (with --of mode)")
-    parser.add_argument("--size", default="1200x800", metavar="WxH", help="in pixels (default: 1200x800)")
+    parser.add_argument("--size", default="2400x1600", metavar="WxH", help="in pixels (default: 2400x1600)")
     parser.add_argument("--dark", action="store_true", help="dark colours")
     parser.set_defaults(run=run_picture)
 

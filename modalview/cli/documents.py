@@ -165,4 +165,3 @@ def _pair(span: tuple[float, float] | None) -> list[float] | None:
 
 def _percent(share: float | None) -> float | None:
     return None if share is None else 100 * share
-

@@ -15,7 +15,9 @@ from modalview.errors import UsageError
 from modalview.model.parts import Model
 from modalview.study import Request, solve
 
-LEAST, MOST = 200, 8000
+LEAST, MOST = 400, 8000
+# Pixels of the file per unit of the drawing: letters of 12 units are sharp in print.
+DETAIL = 2
 
 
 def write_picture(model: Model, words: argparse.Namespace) -> None:
@@ -28,16 +30,19 @@ def write_picture(model: Model, words: argparse.Namespace) -> None:
     FileAccessError
         The file cannot be written.
     """
-    width, height = _size(words.size)
+    width, height = (side // DETAIL for side in _size(words.size))
     palette = DARK if words.dark else LIGHT
-    save_picture(_drawing(model, words, width, height), words.output, width, height, palette)
+    save_picture(_drawing(model, words, width, height), words.output, width, height, palette, DETAIL)
 
 
 def _size(text: str) -> tuple[int, int]:
     match = re.fullmatch(r"(\d{1,5})x(\d{1,5})", text)
-    if match is None or not all(LEAST <= int(side) <= MOST for side in match.groups()):
+    if match is None or not all(
+        LEAST <= int(side) <= MOST and int(side) % DETAIL == 0 for side in match.groups()
+    ):
         raise UsageError(
-            f"--size wants WIDTHxHEIGHT in pixels, {LEAST} to {MOST} each, such as 1200x800; found {text!r}"
+            f"--size wants WIDTHxHEIGHT in pixels, even and {LEAST} to {MOST} each, such as 2400x1600; "
+            f"found {text!r}"
         )
     return int(match[1]), int(match[2])
 
@@ -50,7 +55,7 @@ def _drawing(model: Model, words: argparse.Namespace, width: int, height: int) -
     solution = solve(Request(model))
     if words.of == "scale":
         return scale_drawing(scale_content(solution.outlook, solution), width, height).drawing
-    number = words.mode or 1
+    number = 1 if words.mode is None else words.mode
     if not 1 <= number <= len(solution.modes):
         raise UsageError(f"--mode {number}: the model has modes 1 to {len(solution.modes)}")
     mode = solution.modes[number - 1]

@@ -1,7 +1,9 @@
-"""Results as plain text."""
+"""Results as plain text, no wider than a page of a report."""
 
-from collections.abc import Sequence
+from collections.abc import Iterable, Sequence
+from decimal import ROUND_CEILING, ROUND_FLOOR, Context, Decimal
 from pathlib import Path
+from textwrap import fill
 
 from modalview.cli.cautions import CAUTION
 from modalview.cli.table import table
@@ -11,7 +13,9 @@ from modalview.study import FoundMode, Outlook, Share, Solution
 from modalview.units.show import shown_digits, significant
 
 FORMULA = "separation = (natural frequency - excitation frequency) / excitation frequency"
+WORST = "worst: over all tolerances, 0 once the range overlaps the excitation"
 MOST_SHARES = 3
+WIDTH = 100
 
 
 def bounds_text(outlook: Outlook) -> str:
@@ -34,26 +38,27 @@ def bounds_text(outlook: Outlook) -> str:
             for c in outlook.checks
         ]
         parts.append(table([head, *rows], right=frozenset({2, 3, 4})))
-    parts += [outlook.sentence, "\n".join(bounds.notes)]
+    parts += [_wrapped(outlook.sentence), _lines(bounds.notes)]
     return "\n\n".join(parts + _tail(outlook))
 
 
 def modes_text(solution: Solution) -> str:
     """Return the modes as a table, with the evidence."""
-    head = ["mode", "frequency", "over tolerance", "name", "strain energy", "kinetic energy"]
-    rows = [
-        [
-            str(mode.number),
-            _frequency(mode),
-            _range(mode),
-            mode.name,
-            _shares(mode.strain),
-            _shares(mode.kinetic),
-        ]
-        for mode in solution.modes
-    ]
+    head = ["mode", "frequency", "over tolerance", "name"]
+    rows = [[str(mode.number), _frequency(mode), _range(mode), mode.name] for mode in solution.modes]
     parts = [_title(solution.outlook), table([head, *rows], right=frozenset({0, 1}))]
-    parts.append("\n".join(solution.evidence))
+    parts += [
+        f"{head}\n" + "\n".join(_listed(f"{number:>4}  ", shares) for number, shares in found)
+        for head, found in (
+            ("Strain energy of each mode, by link:", _energies((m.number, m.strain) for m in solution.modes)),
+            (
+                "Kinetic energy of each mode, by body:",
+                _energies((m.number, m.kinetic) for m in solution.modes),
+            ),
+        )
+        if found
+    ]
+    parts.append(_lines(solution.evidence))
     return "\n\n".join(parts + _tail(solution.outlook))
 
 
@@ -61,13 +66,17 @@ def check_text(path: Path, solution: Solution) -> str:
     """Return the verdicts, what decides them, and what was not checked."""
     outlook = solution.outlook
     verdict = outlook.verdict.value if outlook.verdict else "nothing to check"
-    parts = [f"{path}: {verdict.upper()}", solution.sentence]
+    parts = [f"{path}: {verdict.upper()}", _wrapped(solution.sentence)]
     if solution.checks:
-        head = ["check", "excitation", "verdict", "nearest mode", "separation", "worst", "drives it"]
-        parts.append(table([head, *(_check_row(check, solution.modes) for check in solution.checks)]))
-        parts.append("\n".join(f"{check.band.label}: {check.reason}." for check in solution.checks))
-        parts.append(f"{FORMULA}; worst: over all tolerances, 0 once the range overlaps the excitation")
-    parts.append("Not checked:\n" + "\n".join(f"  {line}" for line in outlook.not_checked))
+        head = ["check", "excitation", "verdict", "nearest mode", "separation", "worst"]
+        rows = [_check_row(check, solution.modes) for check in solution.checks]
+        parts.append(table([head, *rows], right=frozenset({4, 5})))
+        parts.append(f"{FORMULA}\n{WORST}")
+        parts.append("\n".join(_wrapped(f"{c.band.label}: {c.reason}.", "  ") for c in solution.checks))
+        driven = [_wrapped(f"{c.band.label}: {drive_text(c)}", "  ") for c in solution.checks if c.drives]
+        if driven:
+            parts.append("What each excitation drives:\n" + "\n".join(driven))
+    parts.append("Not checked:\n" + "\n".join(_wrapped(f"  {line}", "    ") for line in outlook.not_checked))
     return "\n\n".join(parts + _tail(outlook))
 
 
@@ -80,18 +89,17 @@ def _check_row(check: Check, modes: Sequence[FoundMode]) -> list[str]:
         "none" if mode is None else f"{mode.number} at {significant(mode.frequency_hz, 4)} Hz",
         "" if check.separation is None else percent(check.separation),
         "" if check.worst_separation is None else percent(check.worst_separation),
-        drive_text(check),
     ]
 
 
 def drive_text(check: Check) -> str:
-    """Return whether the excitation drives the modes concerned: "mode 4: hardly excited (share 0.0001)"."""
+    """Return whether the excitation drives the modes concerned: "mode 4 hardly excited, share 0.0001"."""
     if not check.drives:
         return ""
     if all(drive.drive is Drive.UNKNOWN for drive in check.drives):
         return "unknown: no point given"
-    return ", ".join(
-        f"mode {d.mode}: {d.drive.value}" + ("" if d.share is None else f" (share {_share(d.share)})")
+    return "; ".join(
+        f"mode {d.mode} {d.drive.value}" + ("" if d.share is None else f", share {_share(d.share)}")
         for d in check.drives
     )
 
@@ -102,16 +110,33 @@ def _share(share: float) -> str:
 
 def _title(outlook: Outlook) -> str:
     model = outlook.request.model
-    return f"{model.title or 'untitled'} ({model.motion}, {outlook.assembly.n} degrees of freedom)"
+    n = outlook.assembly.n
+    freedoms = f"{n} degree{'' if n == 1 else 's'} of freedom"
+    return _wrapped(f"{model.title or 'untitled'} ({model.motion}, {freedoms})")
 
 
 def _tail(outlook: Outlook) -> list[str]:
-    notes = [f"Note: {note}." for note in outlook.notes]
+    notes = [_wrapped(f"Note: {note}.", "  ") for note in outlook.notes]
     return ["\n".join([*notes, CAUTION])]
 
 
+def _wrapped(text: str, indent: str = "") -> str:
+    return fill(text, WIDTH, subsequent_indent=indent, break_long_words=False, break_on_hyphens=False)
+
+
+def _lines(texts: Iterable[str]) -> str:
+    return "\n".join(_wrapped(text, "  ") for text in texts)
+
+
 def _span(span: tuple[float, float] | None) -> str:
-    return "none" if span is None else f"{significant(span[0], 4)} to {significant(span[1], 4)} Hz"
+    """Return a bracket to four digits, rounded outward: it must go on holding what it holds."""
+    if span is None:
+        return "none"
+    low, high = (
+        Context(prec=4, rounding=rounding).create_decimal(Decimal(edge))
+        for edge, rounding in zip(span, (ROUND_FLOOR, ROUND_CEILING), strict=True)
+    )
+    return f"{significant(float(low), 4)} to {significant(float(high), 4)} Hz"
 
 
 def _count(number: int | None) -> str:
@@ -127,9 +152,16 @@ def _frequency(mode: FoundMode) -> str:
 
 def _range(mode: FoundMode) -> str:
     low, high = mode.range_hz
+    if mode.kind == "rigid-body":
+        return ""
     return "as given" if low == high else f"{significant(low, 4)} to {significant(high, 4)} Hz"
 
 
-def _shares(shares: Sequence[Share]) -> str:
+def _energies(found: Iterable[tuple[int, Sequence[Share]]]) -> list[tuple[int, Sequence[Share]]]:
+    return [(number, shares) for number, shares in found if shares]
+
+
+def _listed(head: str, shares: Sequence[Share]) -> str:
     leading = [share for share in shares[:MOST_SHARES] if share.fraction >= 0.005]
-    return ", ".join(f"{share.label} {100 * share.fraction:.0f} %" for share in leading)
+    text = "; ".join(f"{share.label} {100 * share.fraction:.0f} %" for share in leading)
+    return _wrapped(head + text, " " * len(head))

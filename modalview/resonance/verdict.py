@@ -83,14 +83,15 @@ def _nominal_only(band: Band, count: BandCount, cases: Cases) -> Check:
     if count.possible is None:
         reason = f"rounding leaves undecided whether some values within tolerance reach {band_text(band)}"
     else:
-        deciding = _deciding_case(band, count, cases)
-        reach = f"the {deciding} case" if deciding else "the tolerance of the speed alone"
-        reason = f"no mode lies in the band at nominal values, but {reach} reaches {band_text(band)}"
+        deciding, both = _deciding_case(band, count, cases)
+        reach = f"the {deciding} case reaches" if deciding else "the tolerance of the speed alone reaches"
+        reach = "the soft-heavy and the stiff-light case both reach" if both else reach
+        reason = f"no mode lies in the band at nominal values, but {reach} {band_text(band)}"
     return _check(band, count, Verdict.NOMINAL_ONLY, Verdict.NOMINAL_ONLY.value, reason, deciding)
 
 
-def _deciding_case(band: Band, count: BandCount, cases: Cases) -> str | None:
-    """Return which case brings a mode into a band that is empty at nominal values.
+def _deciding_case(band: Band, count: BandCount, cases: Cases) -> tuple[str | None, bool]:
+    """Return which case brings a mode into a band that is empty at nominal values, and whether both do.
 
     Soft-heavy brings modes down past the upper edge, stiff-light up past the lower one; the one that
     moves more where both do. None where the band as widened by the speed tolerance holds a mode at
@@ -98,10 +99,10 @@ def _deciding_case(band: Band, count: BandCount, cases: Cases) -> str | None:
     """
     here = count_band(Cases(cases.nominal, cases.nominal, cases.nominal), band.tolerance)
     if here.inside != 0:
-        return None
+        return None, False
     fallen = _number(count, "soft-heavy", "at most") - _number(here, "nominal", "at most")
     risen = _number(here, "nominal", "below") - _number(count, "stiff-light", "below")
-    return "soft-heavy" if fallen >= risen else "stiff-light"
+    return "soft-heavy" if fallen >= risen else "stiff-light", min(fallen, risen) > 0
 
 
 def _number(count: BandCount, case: str, side: str) -> int:
