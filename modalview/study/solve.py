@@ -67,7 +67,7 @@ def solve(request: Request, outlook: Outlook | None = None) -> Solution:
         modal_mass=tuple(map(float, modal_mass(assembly.pencil(), raw))),
         checks=checks,
         sentence=sentence(request.model, checks, modes),
-        evidence=_evidence(raw, modes),
+        evidence=evidence(raw, modes),
         seconds=perf_counter() - start,
     )
 
@@ -172,7 +172,8 @@ def _drives(
     return tuple(drives[number - 1] for number in numbers)
 
 
-def _evidence(raw: Modes, modes: Sequence[FoundMode]) -> tuple[str, ...]:
+def evidence(raw: Modes, modes: Sequence[FoundMode]) -> tuple[str, ...]:
+    """Say why the modes can be believed."""
     number = len(modes)
     proven = {
         True: "none missed (proven by counts)",
