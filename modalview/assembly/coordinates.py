@@ -149,7 +149,7 @@ def independent_coordinates(model: Model) -> Coordinates:
     Raises
     ------
     ModelFaultsError
-        A gear loop cannot turn, or no motion is left.
+        A gear loop cannot turn, no motion is left, or nothing that moves has mass.
     """
     gear_locks(model)
     frames = _Frames(model, places(model, exact=True))
@@ -166,6 +166,8 @@ def independent_coordinates(model: Model) -> Coordinates:
         raise ModelFaultsError(
             (Fault("model", "no motion is left: every direction is held, locked or massless"),)
         )
+    if massless.issuperset(left):
+        raise ModelFaultsError((Fault("model", "no mass moves: every part that can move is massless"),))
     table, unrounded = _to_bodies(model, frames, solved, (split, dropped), left)
     return Coordinates(
         free=left,

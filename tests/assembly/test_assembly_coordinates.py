@@ -381,6 +381,12 @@ class TestRefused:
             assemble(given)
         assert [fault.path for fault in caught.value.faults] == ['body "a"', 'body "b"', 'body "c"']
 
+    def test_model_without_mass(self):
+        links = [spring("k", "a", "g"), spring("l", "a", "b")]
+        given = model("single axis", [body("a", mass=0.0), body("b", mass=0.0)], links)
+        with pytest.raises(ModelFaultsError, match="no mass moves: every part that can move is massless"):
+            assemble(given)
+
     def test_model_without_bodies(self):
         with pytest.raises(ModelFaultsError, match="has no bodies"):
             assemble(model("single axis", [], []))
