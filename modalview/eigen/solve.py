@@ -1,24 +1,24 @@
 """All modes of a pencil: found, polished from the terms, enclosed, and confirmed by counts."""
 
 from collections.abc import Callable
-from contextlib import AbstractContextManager, nullcontext
+from contextlib import AbstractContextManager
 from dataclasses import replace
 from functools import cache
-from itertools import pairwise
 
 import numpy as np
 import numpy.typing as npt
 from threadpoolctl import ThreadpoolController  # type: ignore[import-untyped]
 
 from modalview.assembly.pencil import Pencil
-from modalview.eigen.completeness import Signs, confirm, signs, verdict
+from modalview.eigen.completeness import confirm, signs, verdict
 from modalview.eigen.deflation import Deflation, deflate
-from modalview.eigen.intervals import Groups, Intervals, enclose
+from modalview.eigen.gathered import ascending, gathered
+from modalview.eigen.intervals import enclose
 from modalview.eigen.jacobi import singular_pairs
 from modalview.eigen.massless import dense_factor
 from modalview.eigen.modes import Modes
 from modalview.eigen.polish import ritz
-from modalview.eigen.rayleigh import Energy, Rayleigh
+from modalview.eigen.rayleigh import Energy
 from modalview.eigen.standard import eigenpairs, eigenvalues
 from modalview.errors import CancelledError, InputError
 
@@ -26,15 +26,11 @@ Array = npt.NDArray[np.float64]
 
 # Dense matrices of this size take 0.3 GB each; several are held at once.
 LARGEST = 6000
-# One BLAS thread below this: a second one gains nothing and can cost tenfold on a busy machine.
-SINGLE_THREAD = 500
 # One-sided Jacobi up to this size: it costs five times an eigenvalue solve here and grows faster.
 LARGEST_JACOBI = 200
 # Rounding of the largest eigenvalue against the lowest above which polishing alone does not reach 1e-14
 # (measured: 1e-15 up to 1e-3 on 48 models of 24 and 120 modes; the estimate of the lowest is rough).
 GRADED = 1e-6
-# Relative distance of eigenvalues up to which they are one repeated frequency.
-REPEATED = 1e-9
 
 
 def never() -> bool:
@@ -82,17 +78,17 @@ def find_modes(
         if progress is not None:
             progress(what, share)
 
-    with _threads(pencil.modes):
+    with _one_thread():
         step("rigid-body modes", 0.0)
         deflation = deflate(pencil)
         step("all modes", 0.1)
         shapes, method = _shapes(pencil, deflation)
         step("error bounds", 0.6)
         energy = Energy.of(pencil)
-        shapes, found = _ascending(shapes, energy.rayleigh(shapes))
+        shapes, found = ascending(shapes, energy.rayleigh(shapes))
         intervals = enclose(energy, shapes, found, deflation.shapes.shape[1])
         step("counts", 0.8)
-        modes = _assembled(deflation, shapes, found, intervals, signs(pencil.shifted, intervals))
+        modes = gathered(deflation.shapes, shapes, found, intervals, signs(pencil.shifted, intervals))
         counts = confirm(pencil.shifted, modes.lower, modes.upper)
     return replace(modes, method=method, counts=counts, complete=verdict(intervals, counts)).frozen()
 
@@ -103,7 +99,7 @@ def all_eigenvalues(pencil: Pencil) -> Array:
     Absolute error about modes * u * the largest. Costs a third of an eigenvalue solve with vectors.
     """
     _check_size(pencil)
-    with _threads(pencil.modes):
+    with _one_thread():
         deflation = deflate(pencil)
         elastic = eigenvalues(deflation.both_sides(pencil.standard.toarray()))
     return np.sort(np.concatenate([np.zeros(deflation.shapes.shape[1]), elastic]))
@@ -124,10 +120,9 @@ def _controller() -> ThreadpoolController:
     return ThreadpoolController()
 
 
-def _threads(size: int) -> AbstractContextManager[object]:
+def _one_thread() -> AbstractContextManager[object]:
+    """Hold BLAS to one thread: a second one gains little and cost seventyfold on a busy machine (n = 520)."""
     # Looking the libraries up takes milliseconds, once; holding them 20 us.
-    if size >= SINGLE_THREAD:
-        return nullcontext()
     limit: AbstractContextManager[object] = _controller().limit(limits=1, user_api="blas")
     return limit
 
@@ -145,66 +140,3 @@ def _shapes(pencil: Pencil, deflation: Deflation) -> tuple[Array, str]:
     for _ in range(1 + graded):
         values, vectors = ritz(pencil.factor, values, vectors)
     return pencil.basis @ vectors, "tridiagonalisation, divide and conquer, polished from the terms"
-
-
-def _ascending(shapes: Array, found: Rayleigh) -> tuple[Array, Rayleigh]:
-    order = np.argsort(found.quotient, kind="stable")
-    sorted_ = Rayleigh(found.quotient[order], found.quotient_error[order], found.residual[order])
-    return shapes[:, order], sorted_
-
-
-def _assembled(
-    deflation: Deflation, shapes: Array, found: Rayleigh, intervals: Intervals, sign: Signs
-) -> Modes:
-    """Put the known rigid-body modes between unstable and elastic ones; counts are added later."""
-    known, start = deflation.shapes.shape[1], sign.unstable
-    zeros, rigid = np.zeros(known), known + sign.zeros
-
-    def place(elastic: Array) -> Array:
-        return np.concatenate([elastic[:start], zeros, elastic[start:]])
-
-    lower, upper = place(intervals.lower), place(intervals.upper)
-    upper[:start] = np.minimum(upper[:start], 0.0)
-    lower[start + rigid :] = np.maximum(lower[start + rigid :], 0.0)
-    values = np.clip(place(found.quotient), lower, upper)
-    values[start : start + rigid] = 0.0
-    frequency = np.sqrt(np.maximum(values, 0.0)) / (2 * np.pi)
-    return Modes(
-        eigenvalues=values,
-        lower=lower,
-        upper=upper,
-        frequency_hz=frequency,
-        numerical_error_hz=_frequency_error(frequency, lower, upper),
-        growth_rate=np.sqrt(np.maximum(-values, 0.0)),
-        shapes=np.concatenate([shapes[:, :start], deflation.shapes, shapes[:, start:]], axis=1),
-        rigid_body_modes=rigid,
-        unstable=start,
-        groups=_groups(values, intervals, sign, known),
-        residuals=place(found.residual),
-        counts=(),
-        complete=None,
-        method="",
-        warnings=sign.warnings,
-    )
-
-
-def _frequency_error(frequency: Array, lower: Array, upper: Array) -> Array:
-    low, high = (np.sqrt(np.maximum(end, 0.0)) / (2 * np.pi) for end in (lower, upper))
-    # The conversions above round too: a few units, outward; nothing where zero is exact.
-    rounding = 4 * np.finfo(float).eps * np.maximum(frequency, high)
-    error: Array = np.maximum(np.maximum(high - frequency, frequency - low), 0.0) + rounding
-    return error
-
-
-def _groups(values: Array, intervals: Intervals, sign: Signs, known: int) -> Groups:
-    """Return runs of one frequency: rigid-body modes, clusters that overlap, values REPEATED apart."""
-    start, rigid = sign.unstable, known + sign.zeros
-    joined = np.diff(values) <= REPEATED * np.abs(values[1:])
-    for first, last in intervals.clusters:
-        shift = known if first >= start else 0
-        joined[first + shift : last + shift - 1] = True
-    if rigid:
-        joined[start : start + rigid - 1] = True
-        joined[[edge for edge in (start - 1, start + rigid - 1) if 0 <= edge < joined.size]] = False
-    edges = [0, *(np.flatnonzero(~joined) + 1).tolist(), values.size]
-    return tuple(pairwise(edges))

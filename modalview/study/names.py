@@ -7,7 +7,7 @@ import numpy.typing as npt
 
 from modalview.assembly.locks import speed_ratios
 from modalview.assembly.parameters import shown_name
-from modalview.model.parts import Model, Motion
+from modalview.model.parts import FREEDOMS, Model, Motion
 
 Array = npt.NDArray[np.float64]
 
@@ -25,46 +25,46 @@ _DIRECTION_WORDS = {
 }
 
 
-def mode_name(model: Model, motion: Array, direction_shares: dict[str, float]) -> str:
-    """Return a mode's name in words.
+def mode_names(model: Model, motion: Array, direction_shares: Array) -> list[str]:
+    """Return every mode's name in words.
 
     Parameters
     ----------
     model : Model
-    motion : array (bodies, 6)
+    motion : array (modes, bodies, 6)
         Motion of every body.
-    direction_shares : mapping
-        Share of the kinetic energy in each freedom ("x", "rz", ...), summed over bodies.
+    direction_shares : array (modes, 6)
+        Share of the kinetic energy in each freedom, summed over bodies.
 
     Examples
     --------
     "motor against pump", "all in step", "sway with some rocking".
     """
+    names = [shown_name(body) for body in model.bodies]
     if model.motion is Motion.SINGLE_AXIS:
-        return _sides(model, motion[:, 1])
+        return [_sides(names, row) for row in motion[:, :, 1]]
     if model.motion is Motion.SHAFT_TRAIN:
         # Seen from one shaft, so that parts that turn together through reversing gears are in step.
         ratios = speed_ratios(model)
-        return _sides(model, motion[:, 5] / [float(ratios[body.id][1]) for body in model.bodies])
+        seen = motion[:, :, 5] / [float(ratios[body.id][1]) for body in model.bodies]
+        return [_sides(names, row) for row in seen]
     words = _DIRECTION_WORDS[model.motion]
-    name = _directions(words, direction_shares)
-    leader = _leader(model, motion)
-    return f"{name} of {leader}" if leader else name
+    return [
+        _directions(words, shares) + _leader(names, row)
+        for row, shares in zip(motion, direction_shares, strict=True)
+    ]
 
 
-def _sides(model: Model, amounts: Array) -> str:
-    largest = float(np.abs(amounts).max(initial=0.0))
+def _sides(names: Sequence[str], amounts: Array) -> str:
+    size = np.abs(amounts)
+    largest = float(size.max(initial=0.0))
     if largest == 0:
         return "nothing moves"
-    moving = [
-        (shown_name(body), float(amount))
-        for body, amount in zip(model.bodies, amounts, strict=True)
-        if abs(amount) >= STILL * largest
-    ]
-    ahead = [name for name, amount in moving if amount > 0]
-    back = [name for name, amount in moving if amount < 0]
+    moving = size >= STILL * largest
+    sides = (np.flatnonzero(moving & (amounts > 0)), np.flatnonzero(moving & (amounts < 0)))
+    ahead, back = ([names[i] for i in side.tolist()] for side in sides)
     if not ahead or not back:
-        return _one_side(ahead or back, len(model.bodies))
+        return _one_side(ahead or back, len(names))
     first, second = (ahead, back) if len(ahead) <= len(back) else (back, ahead)
     return f"{_listed(first)} against {_listed(second)}"
 
@@ -81,18 +81,19 @@ def _listed(names: Sequence[str]) -> str:
     return " and ".join(names)
 
 
-def _directions(words: dict[str, str], shares: dict[str, float]) -> str:
-    ranked = sorted(((share, words[key]) for key, share in shares.items() if key in words), reverse=True)
+def _directions(words: dict[str, str], shares: Array) -> str:
+    of_freedom = dict(zip(FREEDOMS[Motion.SPACE], shares.tolist(), strict=True))
+    ranked = sorted(((of_freedom[key], word) for key, word in words.items()), reverse=True)
     main = [word for share, word in ranked if share >= MAIN] or [ranked[0][1]]
     some = [word for share, word in ranked if SOME <= share < MAIN and word not in main]
     name = " and ".join(main)
     return f"{name} with some {' and '.join(some)}" if some else name
 
 
-def _leader(model: Model, motion: Array) -> str:
-    """Return the body that moves alone, if one does, in a model of several."""
-    if len(model.bodies) == 1:
+def _leader(names: Sequence[str], motion: Array) -> str:
+    """Return " of" the body that moves alone, if one does, in a model of several."""
+    if len(names) == 1:
         return ""
     size = np.linalg.norm(motion[:, :3], axis=1)
     moving = np.flatnonzero(size >= STILL * max(float(size.max()), 1e-300))
-    return shown_name(model.bodies[int(moving[0])]) if moving.size == 1 else ""
+    return f" of {names[int(moving[0])]}" if moving.size == 1 else ""

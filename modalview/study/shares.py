@@ -4,6 +4,7 @@ from collections.abc import Sequence
 
 import numpy as np
 import numpy.typing as npt
+import scipy.sparse as sp
 
 from modalview.assembly.assemble import Assembly, TermSet
 from modalview.assembly.kinematics import ROTATIONS
@@ -16,6 +17,9 @@ from modalview.model.parts import FREEDOMS, Body, InertiaTensor, Link, Motion
 from modalview.study.results import Share
 
 Array = npt.NDArray[np.float64]
+
+# So many of the largest shares and sensitivities of a mode are kept.
+KEPT = 24
 
 
 def strain_energies(assembly: Assembly, modes: Modes) -> Array:
@@ -38,29 +42,44 @@ def _averaged(shares: Array, modes: Modes) -> Array:
     return shares
 
 
-def by_part(terms: TermSet, column: Array, labels: dict[str, str]) -> tuple[Share, ...]:
-    """Sum one mode's shares over the parts, largest first."""
-    total: dict[str, float] = {}
-    for part, share in zip(terms.part, column, strict=True):
-        total[part] = total.get(part, 0.0) + float(share)
-    ranked = sorted(total.items(), key=lambda item: -item[1])
-    return tuple(Share(part, labels[part], fraction) for part, fraction in ranked)
+def by_part(terms: TermSet, shares: Array, labels: dict[str, str]) -> list[tuple[Share, ...]]:
+    """Sum the shares of terms (t, modes) over the parts; the largest KEPT of every mode, largest first."""
+    parts = list(dict.fromkeys(terms.part))
+    place = {part: i for i, part in enumerate(parts)}
+    total = _summed([place[part] for part in terms.part], len(parts), shares)
+    return _largest(total, total, [(part, labels[part]) for part in parts])
 
 
-def sensitivities(assembly: Assembly, strain: Array, kinetic: Array) -> tuple[Share, ...]:
-    """Return d(ln f) / d(ln value) of one mode for every typed value, largest first.
+def sensitivities(assembly: Assembly, strain: Array, kinetic: Array) -> list[tuple[Share, ...]]:
+    """Return d(ln f) / d(ln value) for the KEPT typed values that matter most to every mode, largest first.
 
     Half the strain-energy share of the terms a stiffness enters, minus half the kinetic share of a mass.
     Lord Rayleigh (1894), The Theory of Sound, section 88 (from memory).
     """
-    slope = np.zeros(len(assembly.parameters) + 1)
-    structure = assembly.structure
-    for terms, column, sign in ((structure.stiffness, strain, 0.5), (structure.mass, kinetic, -0.5)):
-        for factor in terms.product_of.T:
-            np.add.at(slope, factor, sign * column)
-    ranked = np.argsort(-np.abs(slope[:-1]), kind="stable")
-    found = ((assembly.parameters[i], float(slope[i])) for i in map(int, ranked))
-    return tuple(Share(p.id, p.label, amount) for p, amount in found if p.family != "damping")
+    structure, count = assembly.structure, len(assembly.parameters) + 1
+    slope = sum(
+        sign * _summed(factor, count, shares)
+        for terms, shares, sign in ((structure.stiffness, strain, 0.5), (structure.mass, kinetic, -0.5))
+        for factor in terms.product_of.T
+    )
+    matter = [i for i, p in enumerate(assembly.parameters) if p.family != "damping"]
+    slope = np.asarray(slope)[matter]
+    return _largest(slope, np.abs(slope), [(p.id, p.label) for p in (assembly.parameters[i] for i in matter)])
+
+
+def _summed(place: Sequence[int] | npt.NDArray[np.int64], count: int, shares: Array) -> Array:
+    """Add up the rows of ``shares`` (t, modes) that have the same place: (count, modes)."""
+    table = sp.csr_array((np.ones(len(place)), (place, np.arange(len(place)))), shape=(count, len(place)))
+    return np.asarray(table @ shares)
+
+
+def _largest(amounts: Array, size: Array, names: Sequence[tuple[str, str]]) -> list[tuple[Share, ...]]:
+    ranked = np.argsort(-size, axis=0, kind="stable")[:KEPT]
+    chosen = np.take_along_axis(amounts, ranked, axis=0)
+    return [
+        tuple(Share(names[i][0], names[i][1], amount) for i, amount in zip(rows, column, strict=True))
+        for rows, column in zip(ranked.T.tolist(), chosen.T.tolist(), strict=True)
+    ]
 
 
 def labels(parts: Sequence[Body | Link]) -> dict[str, str]:
@@ -68,18 +87,16 @@ def labels(parts: Sequence[Body | Link]) -> dict[str, str]:
     return {part.id: shown_name(part) for part in parts}
 
 
-def direction_shares(assembly: Assembly, motion: Array) -> dict[str, float]:
-    """Return the share of the kinetic energy of one mode in each freedom, from body motion (bodies, 6).
+def direction_shares(assembly: Assembly, motion: Array) -> Array:
+    """Return the share of each mode's kinetic energy in x, y, z, rx, ry, rz (modes, 6), from body motion.
 
-    Products of inertia are left aside: the shares only choose words.
+    ``motion`` is (modes, bodies, 6). Products of inertia are left aside: the shares only choose words.
     """
-    total = dict.fromkeys(FREEDOMS[assembly.model.motion], 0.0)
-    for body, row in zip(assembly.model.bodies, motion, strict=True):
-        for column, name in enumerate(FREEDOMS[Motion.SPACE]):
-            if name in total:
-                total[name] += _inertia(body, name) * float(row[column]) ** 2
-    whole = sum(total.values())
-    return {name: energy / whole for name, energy in total.items()} if whole else total
+    inertia = [[_inertia(body, name) for name in FREEDOMS[Motion.SPACE]] for body in assembly.model.bodies]
+    energy = np.einsum("bf,mbf->mf", np.array(inertia), motion**2)
+    whole = energy.sum(axis=1, keepdims=True)
+    shares: Array = np.divide(energy, whole, out=np.zeros_like(energy), where=whole > 0)
+    return shares
 
 
 def _inertia(body: Body, name: str) -> float:

@@ -18,7 +18,7 @@ from modalview.resonance.drive import mode_drives
 from modalview.resonance.results import Check, ModeDrive
 from modalview.study.completed import ELASTIC, RIGID, UNSTABLE, completed
 from modalview.study.look import RAD_PER_HZ, look
-from modalview.study.names import mode_name
+from modalview.study.names import mode_names
 from modalview.study.results import FoundMode, Outlook, Request, Share, Solution
 from modalview.study.sentence import sentence
 from modalview.study.shares import (
@@ -99,27 +99,29 @@ def _found(assembly: Assembly, raw: Modes, ranges: Array) -> tuple[FoundMode, ..
     model = assembly.model
     strain, kinetic = strain_energies(assembly, raw), kinetic_energies(assembly, raw)
     motion = _motions(assembly, raw.shapes)
-    link_names, body_names = labels(model.links), labels(model.bodies)
+    names = mode_names(model, motion, direction_shares(assembly, motion))
+    springs = by_part(assembly.structure.stiffness, strain, labels(model.links))
+    masses = by_part(assembly.structure.mass, kinetic, labels(model.bodies))
+    slopes = sensitivities(assembly, strain, kinetic)
     effective = _effective_masses(assembly, raw)
     repeated = {i: (start, stop) for start, stop in raw.repeated for i in range(start, stop)}
     found = []
     for i in range(raw.number):
         kind = _kind(raw, i)
+        elastic = kind == ELASTIC
         start, stop = repeated.get(i, (0, 0))
         found.append(
             FoundMode(
                 number=i + 1,
-                name=_named(model, assembly, motion[i], kind),
+                name=names[i] if elastic else f"{kind}: {names[i]}",
                 frequency_hz=float(raw.frequency_hz[i]),
                 numerical_error_hz=float(raw.numerical_error_hz[i]),
                 range_hz=(float(ranges[i, 0]), float(ranges[i, 1])),
                 kind=kind,
-                repeated_with=tuple(range(start + 1, stop + 1)) if kind == ELASTIC else (),
-                strain=by_part(assembly.structure.stiffness, strain[:, i], link_names)
-                if kind == ELASTIC
-                else (),
-                kinetic=by_part(assembly.structure.mass, kinetic[:, i], body_names),
-                sensitivity=sensitivities(assembly, strain[:, i], kinetic[:, i]) if kind == ELASTIC else (),
+                repeated_with=tuple(range(start + 1, stop + 1)) if elastic else (),
+                strain=springs[i] if elastic else (),
+                kinetic=masses[i],
+                sensitivity=slopes[i] if elastic else (),
                 effective_mass=effective[i],
                 motion=motion[i],
             )
@@ -131,11 +133,6 @@ def _kind(raw: Modes, i: int) -> str:
     if i < raw.unstable:
         return UNSTABLE
     return RIGID if i < raw.unstable + raw.rigid_body_modes else ELASTIC
-
-
-def _named(model: Model, assembly: Assembly, motion: Array, kind: str) -> str:
-    name = mode_name(model, motion, direction_shares(assembly, motion))
-    return name if kind == ELASTIC else f"{kind}: {name}"
 
 
 def _motions(assembly: Assembly, shapes: Array) -> Array:
