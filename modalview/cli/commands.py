@@ -1,20 +1,16 @@
 """The commands: each reads its words, asks the study, and prints text or JSON."""
 
 import argparse
-import json
 import sys
 from collections.abc import Callable
 from pathlib import Path
-from typing import Any
 
-from modalview.cli import documents, texts
+from modalview.cli import documents, matrices, texts
+from modalview.cli.printing import OK, UNUSABLE, progress, say, say_json, verdict_code
 from modalview.errors import KeepclearError
 from modalview.model.parts import Model
-from modalview.resonance.results import Verdict
 from modalview.store import read_model
-from modalview.study import Outlook, Request, Solution, look, solve
-
-OK, NOT_CLEAR, UNUSABLE = 0, 1, 2
+from modalview.study import Request, Solution, look, solve
 
 Prepare = Callable[[argparse.ArgumentParser], None]
 PICTURES = ("sheet", "scale", "mode")
@@ -24,35 +20,19 @@ def _file(words: argparse.Namespace) -> tuple[Path, Model]:
     return words.file, read_model(words.file)
 
 
-def _say(text: str) -> None:
-    sys.stdout.write(text.rstrip("\n") + "\n")
-
-
-def _say_json(document: Any) -> None:
-    _say(json.dumps(document, indent=2, ensure_ascii=False, allow_nan=False))
-
-
-def _progress(what: str, share: float) -> None:
-    """Tell how far long work is, on a screen only."""
-    if sys.stderr.isatty():
-        sys.stderr.write(f"\r{100 * share:3.0f} %  {what:<40.40}")
-        if share >= 1:
-            sys.stderr.write("\r" + " " * 48 + "\r")
-        sys.stderr.flush()
-
-
-def _solved(model: Model) -> Solution:
-    return solve(Request(model, progress=_progress))
+def _solved(model: Model, *, exact: bool = False) -> Solution:
+    return solve(Request(model, progress=progress, exact=exact))
 
 
 def _prepare_file(parser: argparse.ArgumentParser) -> None:
-    parser.add_argument("file", type=Path, metavar="FILE", help="a .keepclear file")
+    parser.add_argument("file", type=Path, nargs="?", metavar="FILE", help="a .keepclear file")
     parser.add_argument("--json", action="store_true", help="print JSON: SI, with the unit in each key")
 
 
 def _prepare_bounds(parser: argparse.ArgumentParser) -> None:
     _prepare_file(parser)
-    parser.set_defaults(run=run_bounds)
+    matrices.add_words(parser)
+    parser.set_defaults(run=matrices.either(run_bounds, matrices.run_bounds))
 
 
 def run_bounds(words: argparse.Namespace) -> int:
@@ -60,15 +40,16 @@ def run_bounds(words: argparse.Namespace) -> int:
     path, model = _file(words)
     outlook = look(Request(model))
     if words.json:
-        _say_json(documents.bounds_document(path, outlook))
+        say_json(documents.bounds_document(path, outlook))
     else:
-        _say(texts.bounds_text(outlook))
+        say(texts.bounds_text(outlook))
     return OK
 
 
 def _prepare_modes(parser: argparse.ArgumentParser) -> None:
     _prepare_file(parser)
-    parser.set_defaults(run=run_modes)
+    matrices.add_words(parser)
+    parser.set_defaults(run=matrices.either(run_modes, matrices.run_modes))
 
 
 def run_modes(words: argparse.Namespace) -> int:
@@ -76,16 +57,18 @@ def run_modes(words: argparse.Namespace) -> int:
     path, model = _file(words)
     solution = _solved(model)
     if words.json:
-        _say_json(documents.modes_document(path, solution))
+        say_json(documents.modes_document(path, solution))
     else:
-        _say(texts.modes_text(solution))
+        say(texts.modes_text(solution))
     return OK
 
 
 def _prepare_check(parser: argparse.ArgumentParser) -> None:
-    parser.add_argument("files", type=Path, nargs="+", metavar="FILE", help="one or more .keepclear files")
+    parser.add_argument("files", type=Path, nargs="*", metavar="FILE", help="one or more .keepclear files")
     parser.add_argument("--json", action="store_true", help="print JSON: SI, with the unit in each key")
-    parser.set_defaults(run=run_check)
+    parser.add_argument("--exact", action="store_true", help="prove the verdicts by counts without any rounding")
+    matrices.add_words(parser)
+    parser.set_defaults(run=matrices.either(run_check, matrices.run_check))
 
 
 def run_check(words: argparse.Namespace) -> int:
@@ -93,11 +76,11 @@ def run_check(words: argparse.Namespace) -> int:
     found, codes = [], []
     for path in words.files:
         try:
-            solution = _solved(read_model(path))
+            solution = _solved(read_model(path), exact=words.exact)
             found.append(documents.check_document(path, solution))
-            codes.append(_code(solution.outlook))
+            codes.append(verdict_code(solution.outlook.verdict))
             if not words.json:
-                _say(texts.check_text(path, solution))
+                say(texts.check_text(path, solution))
         except KeepclearError as error:
             if len(words.files) == 1:
                 raise
@@ -105,16 +88,10 @@ def run_check(words: argparse.Namespace) -> int:
             codes.append(UNUSABLE)
             sys.stderr.write(f"keepclear: {path}: {error}\n")
         if not words.json and path is not words.files[-1]:
-            _say("")
+            say("")
     if words.json:
-        _say_json(found[0] if len(words.files) == 1 else found)
+        say_json(found[0] if len(words.files) == 1 else found)
     return max(codes)
-
-
-def _code(outlook: Outlook) -> int:
-    if outlook.verdict is None:
-        return UNUSABLE
-    return OK if outlook.verdict is Verdict.CLEAR else NOT_CLEAR
 
 
 def _prepare_picture(parser: argparse.ArgumentParser) -> None:
@@ -133,7 +110,7 @@ def run_picture(words: argparse.Namespace) -> int:
 
     _, model = _file(words)
     write_picture(model, words)
-    _say(f"{words.output} written")
+    say(f"{words.output} written")
     return OK
 
 

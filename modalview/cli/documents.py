@@ -8,13 +8,15 @@ from typing import Any
 import numpy as np
 
 from modalview.bounds.discs import Discs
+from modalview.eigen.modes import Modes
 from modalview.resonance.results import Check
-from modalview.study import FoundMode, Outlook, Share, Solution
+from modalview.study import FoundMode, MatrixOutlook, MatrixSolution, Outlook, Share, Solution
+from modalview.study.matrices import ABSENT
 
 RAD_PER_HZ = 2 * math.pi
 
 
-def bounds_document(path: Path, outlook: Outlook) -> dict[str, Any]:
+def bounds_document(path: Path, outlook: Outlook | MatrixOutlook) -> dict[str, Any]:
     """Return what is known before a solve."""
     bounds = outlook.bounds
     return {
@@ -75,13 +77,18 @@ def modes_document(path: Path, solution: Solution) -> dict[str, Any]:
         "rigid_body_modes": raw.rigid_body_modes,
         "unstable_modes": raw.unstable,
         "complete": raw.complete,
-        "counts": [
-            {"at_hz": math.sqrt(max(c.sigma, 0.0)) / RAD_PER_HZ, "found": c.found, "counted": c.counted}
-            for c in raw.counts
-        ],
+        "counts": counts_document(raw),
         "method": raw.method,
         "warnings": list(raw.warnings),
     }
+
+
+def counts_document(raw: Modes) -> list[dict[str, Any]]:
+    """Return the counts that confirm that no mode was missed."""
+    return [
+        {"at_hz": math.sqrt(max(c.sigma, 0.0)) / RAD_PER_HZ, "found": c.found, "counted": c.counted}
+        for c in raw.counts
+    ]
 
 
 def _mode_document(mode: FoundMode, column: int, solution: Solution) -> dict[str, Any]:
@@ -114,7 +121,7 @@ def _shape(mode: FoundMode, solution: Solution) -> dict[str, list[float]]:
     return {body.id: np.asarray(row).tolist() for body, row in zip(bodies, mode.motion, strict=True)}
 
 
-def check_document(path: Path, solution: Solution) -> dict[str, Any]:
+def check_document(path: Path, solution: Solution | MatrixSolution) -> dict[str, Any]:
     """Return the verdicts."""
     outlook = solution.outlook
     return {
@@ -134,6 +141,7 @@ def _check_document(check: Check) -> dict[str, Any]:
         "verdict": check.verdict.value,
         "wording": check.wording,
         "reason": check.reason,
+        "proven": check.proof,
         "excitation_hz": _hz(check.band.excitation),
         "band_hz": _hz(check.band.nominal),
         "tolerance_band_hz": _hz(check.band.tolerance),
@@ -150,9 +158,26 @@ def _check_document(check: Check) -> dict[str, Any]:
     }
 
 
-def _head(path: Path, outlook: Outlook) -> dict[str, Any]:
+def _head(path: Path, outlook: Outlook | MatrixOutlook) -> dict[str, Any]:
+    if isinstance(outlook, MatrixOutlook):
+        return matrices_head(path, outlook)
     model = outlook.request.model
     return {"file": str(path), "title": model.title, "degrees_of_freedom": outlook.assembly.n}
+
+
+def matrices_head(path: Path, outlook: MatrixOutlook) -> dict[str, Any]:
+    """Return what was read and taken for granted; ``absent`` lists what matrices cannot tell."""
+    request = outlook.request
+    mass = request.pair.mass_file
+    return {
+        "file": str(path),
+        "mass_file": None if mass is None else str(mass),
+        "title": "",
+        "degrees_of_freedom": outlook.pencil.n,
+        "tolerance_k_percent": 100 * request.tolerance_k,
+        "tolerance_m_percent": 100 * request.tolerance_m,
+        "absent": list(ABSENT),
+    }
 
 
 def _hz(span: tuple[float, float]) -> list[float]:

@@ -8,7 +8,8 @@ from typing import NoReturn
 
 from modalview import __version__
 from modalview.cli.cautions import CAUTION
-from modalview.cli.commands import COMMANDS, UNUSABLE
+from modalview.cli.commands import COMMANDS
+from modalview.cli.printing import UNUSABLE
 from modalview.errors import FaultsError, KeepclearError
 
 _DESCRIPTION = (
@@ -41,6 +42,8 @@ def main(arguments: Sequence[str] | None = None) -> int:
         _complain("stopped")
     except BrokenPipeError:
         sys.stderr.close()  # whoever read the output has gone; nothing is left to be said
+    except OSError as error:  # files of the user are guarded where they are read and written
+        _complain(f"the output cannot be written: {error.strerror or error}")
     except Exception as error:  # the last resort of the command line: a message, never a traceback
         logging.getLogger(__name__).debug("unexpected failure", exc_info=True)
         _complain(f"an unexpected error, which is a fault of the program: {type(error).__name__}: {error}")

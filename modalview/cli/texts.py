@@ -9,7 +9,7 @@ from modalview.cli.cautions import CAUTION
 from modalview.cli.table import table
 from modalview.resonance.results import Check, Drive
 from modalview.resonance.wording import band_text, hz_range, percent
-from modalview.study import FoundMode, Outlook, Share, Solution
+from modalview.study import FoundMode, MatrixOutlook, MatrixSolution, Outlook, Share, Solution
 from modalview.units.show import shown_digits, significant
 
 FORMULA = "separation = (natural frequency - excitation frequency) / excitation frequency"
@@ -18,7 +18,7 @@ MOST_SHARES = 3
 WIDTH = 100
 
 
-def bounds_text(outlook: Outlook) -> str:
+def bounds_text(outlook: Outlook | MatrixOutlook) -> str:
     """Return what is known before a solve."""
     bounds = outlook.bounds
     parts = [
@@ -27,7 +27,7 @@ def bounds_text(outlook: Outlook) -> str:
             [
                 ["lowest elastic mode", _span(bounds.lowest_hz)],
                 ["highest mode", _span(bounds.highest_hz)],
-                ["rigid-body modes", str(bounds.rigid_body_modes)],
+                ["rigid-body modes", _count(bounds.rigid_body_modes)],
             ]
         ),
     ]
@@ -42,7 +42,7 @@ def bounds_text(outlook: Outlook) -> str:
     return "\n\n".join(parts + _tail(outlook))
 
 
-def modes_text(solution: Solution) -> str:
+def modes_text(solution: Solution | MatrixSolution) -> str:
     """Return the modes as a table, with the evidence."""
     head = ["mode", "frequency", "over tolerance", "name"]
     rows = [[str(mode.number), _frequency(mode), _range(mode), mode.name] for mode in solution.modes]
@@ -62,7 +62,7 @@ def modes_text(solution: Solution) -> str:
     return "\n\n".join(parts + _tail(solution.outlook))
 
 
-def check_text(path: Path, solution: Solution) -> str:
+def check_text(path: Path, solution: Solution | MatrixSolution) -> str:
     """Return the verdicts, what decides them, and what was not checked."""
     outlook = solution.outlook
     verdict = outlook.verdict.value if outlook.verdict else "nothing to check"
@@ -108,14 +108,16 @@ def _share(share: float) -> str:
     return f"{share:.2g}" if share >= 1e-6 else "0"
 
 
-def _title(outlook: Outlook) -> str:
-    model = outlook.request.model
-    n = outlook.assembly.n
+def _title(outlook: Outlook | MatrixOutlook) -> str:
+    n = outlook.pencil.n if isinstance(outlook, MatrixOutlook) else outlook.assembly.n
     freedoms = f"{n} degree{'' if n == 1 else 's'} of freedom"
+    if isinstance(outlook, MatrixOutlook):
+        return _wrapped(f"{outlook.request.pair.words} ({freedoms})")
+    model = outlook.request.model
     return _wrapped(f"{model.title or 'untitled'} ({model.motion}, {freedoms})")
 
 
-def _tail(outlook: Outlook) -> list[str]:
+def _tail(outlook: Outlook | MatrixOutlook) -> list[str]:
     notes = [_wrapped(f"Note: {note}.", "  ") for note in outlook.notes]
     return ["\n".join([*notes, CAUTION])]
 

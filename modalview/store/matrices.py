@@ -51,6 +51,12 @@ class MatrixPair:
     mass_file: Path | None
     notes: tuple[str, ...]
 
+    @property
+    def words(self) -> str:
+        """The files in words: "stiffness K.mtx, mass M.mtx"."""
+        mass = "unit mass" if self.mass_file is None else f"mass {self.mass_file}"
+        return f"stiffness {self.stiffness_file}, {mass}"
+
 
 def read_pair(stiffness: str | os.PathLike[str], mass: str | os.PathLike[str] | None = None) -> MatrixPair:
     """Read a stiffness matrix and, where there is one, a mass matrix.

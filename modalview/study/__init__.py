@@ -1,7 +1,28 @@
 """The one door to the core: a frozen request in, a frozen result with its evidence out."""
 
 from modalview.study.look import look
+from modalview.study.matrices import (
+    MatrixOutlook,
+    MatrixRequest,
+    MatrixSolution,
+    look_at_matrices,
+    solve_matrices,
+)
 from modalview.study.results import FoundMode, Interval, Outlook, Request, Share, Solution
 from modalview.study.solve import solve
 
-__all__ = ["FoundMode", "Interval", "Outlook", "Request", "Share", "Solution", "look", "solve"]
+__all__ = [
+    "FoundMode",
+    "Interval",
+    "MatrixOutlook",
+    "MatrixRequest",
+    "MatrixSolution",
+    "Outlook",
+    "Request",
+    "Share",
+    "Solution",
+    "look",
+    "look_at_matrices",
+    "solve",
+    "solve_matrices",
+]

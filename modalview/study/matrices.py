@@ -38,6 +38,7 @@ ABSENT = (
     "whether an excitation drives a mode",
     "a tolerance of its own for each spring and mass",
 )
+LACKING = "matrices name no parts, so these are absent: " + "; ".join(ABSENT)
 UNITS = "SI is assumed: N/m and kg, N m/rad and kg m² (eigenvalues in rad²/s²)"
 
 
@@ -153,7 +154,15 @@ def look_at_matrices(request: MatrixRequest) -> MatrixOutlook:
         verdict=worst(checks),
         sentence=sentence(request.model, checks),
         not_checked=_not_checked(request.machines),
-        notes=(UNITS, *pair.notes, *_massless(pencil), *_zeros(bounds), *tolerance_notes(request), *doubts),
+        notes=(
+            UNITS,
+            *pair.notes,
+            *_massless(pencil),
+            *_zeros(bounds),
+            *tolerance_notes(request),
+            *doubts,
+            LACKING,
+        ),
         seconds=perf_counter() - start,
     )
 

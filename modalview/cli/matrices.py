@@ -1,0 +1,227 @@
+"""The commands on matrices of others: --stiffness and --mass in place of a file."""
+
+import argparse
+import re
+from collections.abc import Callable, Sequence
+from dataclasses import dataclass
+from pathlib import Path
+from typing import Any
+
+from modalview.cli import documents, texts
+from modalview.cli.matrices_document import modes_document
+from modalview.cli.printing import OK, progress, say, say_json, verdict_code
+from modalview.errors import UnitError, UsageError
+from modalview.model.parts import Excitation, Machine, Model, SpeedRange
+from modalview.model.rules import faults
+from modalview.model.values import Entry
+from modalview.store.matrices import read_pair
+from modalview.study import MatrixRequest, look_at_matrices, solve_matrices
+from modalview.study.matrices import require_modes
+from modalview.units import quantities as q
+from modalview.units.quantities import Quantity
+
+Run = Callable[[argparse.Namespace], int]
+
+MACHINE = "machine"
+_PLAIN = re.compile(r"[+-]?(\d{1,9}\.?\d{0,9}|\.\d{1,9})", re.ASCII)
+
+
+@dataclass(frozen=True, slots=True)
+class Word:
+    """One option that goes with --stiffness.
+
+    Parameters
+    ----------
+    name : str
+        Without dashes.
+    example : str
+        Shown in its place.
+    about : str
+        For --help.
+    quantity : Quantity or None
+        What is typed; None for a file or a list.
+    """
+
+    name: str
+    example: str
+    about: str
+    quantity: Quantity | None = None
+
+
+STIFFNESS = Word("stiffness", "K.mtx", "a stiffness matrix in Matrix Market form (.mtx, .mtx.gz), N/m")
+WORDS = (
+    Word("mass", "M.mtx", "its mass matrix, kg; without one, 1 kg at every coordinate"),
+    Word("speed", '"2950 rpm"', "speed of the machine", q.SPEED),
+    Word("speed-from", '"600 rpm"', "lowest speed, with --speed-to", q.SPEED),
+    Word("speed-to", '"1480 rpm"', "highest speed, with --speed-from", q.SPEED),
+    Word("speed-tolerance", '"2 %"', "how far the speed may lie off to either side", q.RATIO),
+    Word("orders", "1,2,7", "multiples of the speed to be kept clear"),
+    Word("frequencies", '"100 Hz,200 Hz"', "fixed frequencies to be kept clear"),
+    Word("margin", '"15 %"', "distance wanted on either side of each; it has no default", q.RATIO),
+    Word("tolerance-k", '"10 %"', "how far the whole stiffness matrix may lie off, by one factor", q.RATIO),
+    Word("tolerance-m", '"3 %"', "how far the whole mass matrix may lie off, by one factor", q.RATIO),
+)
+FILES = ("stiffness", "mass")
+
+
+def add_words(parser: argparse.ArgumentParser) -> None:
+    """Add the options of matrices to a command."""
+    group = parser.add_argument_group(
+        "matrices of others", "in place of FILE; SI is assumed; what needs parts (names, shares) is absent"
+    )
+    for word in (STIFFNESS, *WORDS):
+        kind = Path if word.name in FILES else str
+        about = word.about.replace("%", "%%")
+        group.add_argument(f"--{word.name}", type=kind, metavar=word.example.replace("%", "%%"), help=about)
+
+
+def either(of_file: Run, of_matrices: Run) -> Run:
+    """Return a command that runs on a file or on matrices, whichever the words name."""
+
+    def run(words: argparse.Namespace) -> int:
+        named = words.files if "files" in words else words.file
+        if words.stiffness is None:
+            lone = [word.name for word in WORDS if _given(words, word.name) is not None]
+            if lone:
+                raise UsageError(f"--{lone[0]} goes with --stiffness; a .keepclear file holds its own values")
+            if not named:
+                raise UsageError("name a .keepclear file, or a stiffness matrix by --stiffness K.mtx")
+            return of_file(words)
+        if named:
+            raise UsageError("a .keepclear file and --stiffness are two models; name one of them")
+        return of_matrices(words)
+
+    return run
+
+
+def run_bounds(words: argparse.Namespace) -> int:
+    """Print what is known of matrices before a solve."""
+    outlook = look_at_matrices(request_of(words))
+    _print(
+        words, lambda: documents.bounds_document(words.stiffness, outlook), lambda: texts.bounds_text(outlook)
+    )
+    return OK
+
+
+def run_modes(words: argparse.Namespace) -> int:
+    """Print the modes of matrices."""
+    solution = solve_matrices(request_of(words))
+    raw = require_modes(solution)
+    _print(words, lambda: modes_document(words.stiffness, solution, raw), lambda: texts.modes_text(solution))
+    return OK
+
+
+def run_check(words: argparse.Namespace) -> int:
+    """Print the verdicts on matrices."""
+    path, solution = words.stiffness, solve_matrices(request_of(words))
+    _print(words, lambda: documents.check_document(path, solution), lambda: texts.check_text(path, solution))
+    return verdict_code(solution.outlook.verdict)
+
+
+def _print(words: argparse.Namespace, document: Callable[[], Any], text: Callable[[], str]) -> None:
+    if words.json:
+        say_json(document())
+    else:
+        say(text())
+
+
+def request_of(words: argparse.Namespace) -> MatrixRequest:
+    """Return what the words ask for.
+
+    Raises
+    ------
+    UsageError
+        Naming the option, what is wrong with it and what to do.
+    FileFaultsError, FileAccessError
+        A matrix cannot be read.
+    """
+    machines = _machines(words)
+    tolerance_k, tolerance_m = _share(words, "tolerance-k"), _share(words, "tolerance-m")
+    pair = read_pair(words.stiffness, words.mass)
+    return MatrixRequest(pair, machines, tolerance_k, tolerance_m, progress=progress)
+
+
+def _machines(words: argparse.Namespace) -> tuple[Machine, ...]:
+    excitations = (*_orders(words), *_frequencies(words))
+    speed = _speed(words)
+    if not excitations:
+        idle = [name for name in ("speed", "speed-from", "margin") if _given(words, name) is not None]
+        if idle:
+            raise UsageError(f"--{idle[0]} needs --orders or --frequencies: what is to be kept clear")
+        return ()
+    machine = Machine(
+        id=MACHINE,
+        speed=speed,
+        speed_tolerance=_typed(words, "speed-tolerance", q.RATIO),
+        margin=_typed(words, "margin", q.RATIO),
+        excitations=excitations,
+    )
+    broken = faults(Model(machines=(machine,)))
+    if broken:
+        raise UsageError("; ".join(f"{_option(fault.path)} {fault.reason}" for fault in broken))
+    return (machine,)
+
+
+def _option(path: str) -> str:
+    """Return the option that a fault of the machine belongs to."""
+    if "excitations[" in path:
+        return "--frequencies:" if path.endswith("frequency") else "--orders:"
+    key = path.rsplit('" . ', 1)[-1]
+    names = {"speed . from": "speed-from", "speed . to": "speed-to", "speed_tolerance": "speed-tolerance"}
+    return f"--{names.get(key, key)}"
+
+
+def _speed(words: argparse.Namespace) -> Entry | SpeedRange | None:
+    one, low, high = (_typed(words, name, q.SPEED) for name in ("speed", "speed-from", "speed-to"))
+    if (low is None) != (high is None):
+        raise UsageError("a speed range has both ends: --speed-from and --speed-to")
+    if one is not None and low is not None:
+        raise UsageError("--speed is one speed, --speed-from and --speed-to are a range; give one of them")
+    return SpeedRange(from_=low, to=high) if low is not None and high is not None else one
+
+
+def _orders(words: argparse.Namespace) -> list[Excitation]:
+    found = []
+    for text in _listed(words, "orders"):
+        if not _PLAIN.fullmatch(text):
+            raise UsageError(f"--orders wants numbers, such as 1,2,7; found {text!r}")
+        order = float(text)
+        found.append(Excitation(id=f"{order:g}x", order=order))
+    return found
+
+
+def _frequencies(words: argparse.Namespace) -> list[Excitation]:
+    return [
+        Excitation(id=text, frequency=_entry("frequencies", text, q.FREQUENCY))
+        for text in _listed(words, "frequencies")
+    ]
+
+
+def _listed(words: argparse.Namespace, name: str) -> Sequence[str]:
+    given = _given(words, name)
+    return [] if given is None else [part.strip() for part in given.split(",")]
+
+
+def _share(words: argparse.Namespace, name: str) -> float:
+    entry = _typed(words, name, q.RATIO)
+    if entry is None:
+        return 0.0
+    if not 0 <= entry.si < 1:
+        raise UsageError(f"--{name} is a share from 0 % to below 100 %; found {entry.text!r}")
+    return entry.si
+
+
+def _typed(words: argparse.Namespace, name: str, quantity: Quantity) -> Entry | None:
+    text = _given(words, name)
+    return None if text is None else _entry(name, text, quantity)
+
+
+def _entry(name: str, text: str, quantity: Quantity) -> Entry:
+    try:
+        return Entry.typed(text, quantity)
+    except UnitError as error:
+        raise UsageError(f"--{name}: {error}") from None
+
+
+def _given(words: argparse.Namespace, name: str) -> Any:
+    return getattr(words, name.replace("-", "_"))
