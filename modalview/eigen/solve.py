@@ -1,13 +1,10 @@
 """All modes of a pencil: found, polished from the terms, enclosed, and confirmed by counts."""
 
 from collections.abc import Callable
-from contextlib import AbstractContextManager
 from dataclasses import replace
-from functools import cache
 
 import numpy as np
 import numpy.typing as npt
-from threadpoolctl import ThreadpoolController  # type: ignore[import-untyped]
 
 from modalview.assembly.pencil import Pencil
 from modalview.eigen.completeness import confirm, signs, verdict
@@ -20,6 +17,7 @@ from modalview.eigen.modes import Modes
 from modalview.eigen.polish import ritz
 from modalview.eigen.rayleigh import Energy
 from modalview.eigen.standard import eigenpairs, eigenvalues
+from modalview.eigen.threads import one_blas_thread
 from modalview.errors import CancelledError, InputError
 
 Array = npt.NDArray[np.float64]
@@ -78,7 +76,7 @@ def find_modes(
         if progress is not None:
             progress(what, share)
 
-    with _one_thread():
+    with one_blas_thread():
         step("rigid-body modes", 0.0)
         deflation = deflate(pencil)
         step("all modes", 0.1)
@@ -99,7 +97,7 @@ def all_eigenvalues(pencil: Pencil) -> Array:
     Absolute error about modes * u * the largest. Costs a third of an eigenvalue solve with vectors.
     """
     _check_size(pencil)
-    with _one_thread():
+    with one_blas_thread():
         deflation = deflate(pencil)
         elastic = eigenvalues(deflation.both_sides(pencil.standard.toarray()))
     return np.sort(np.concatenate([np.zeros(deflation.shapes.shape[1]), elastic]))
@@ -113,18 +111,6 @@ def _check_size(pencil: Pencil) -> None:
             f"The model has {pencil.modes} modes; all modes at once are found up to {LARGEST}. "
             "Hold directions that do not matter, or join bodies that move as one with rigid links."
         )
-
-
-@cache
-def _controller() -> ThreadpoolController:
-    return ThreadpoolController()
-
-
-def _one_thread() -> AbstractContextManager[object]:
-    """Hold BLAS to one thread: a second one gains little and cost seventyfold on a busy machine (n = 520)."""
-    # Looking the libraries up takes milliseconds, once; holding them 20 us.
-    limit: AbstractContextManager[object] = _controller().limit(limits=1, user_api="blas")
-    return limit
 
 
 def _shapes(pencil: Pencil, deflation: Deflation) -> tuple[Array, str]:
