@@ -5,12 +5,12 @@ from dataclasses import dataclass
 
 import numpy as np
 import numpy.typing as npt
+from threadpoolctl import threadpool_limits  # type: ignore[import-untyped]
 
 from modalview.assembly.dampedterms import DampedTerms
 from modalview.assembly.statematrix import StateMatrix, drifting_motions, state_matrix
 from modalview.eigen.dampedmodes import DampedModes
 from modalview.eigen.dampedratio import real_pair_ratio
-from modalview.eigen.solve import _threads, never
 from modalview.errors import CancelledError, NumericalError
 
 Array = npt.NDArray[np.float64]
@@ -25,6 +25,11 @@ NEARLY_CRITICAL = 1e8
 SOUND = 1e-6
 # The sum of the roots and the trace may differ by this many times their expected rounding.
 SLACK = 100.0
+
+
+def never() -> bool:
+    """Never cancelled."""
+    return False
 
 
 @dataclass(frozen=True, slots=True, eq=False)
@@ -84,7 +89,8 @@ def find_damped_modes(
         if progress is not None:
             progress(what, share)
 
-    with _threads(terms.roots):
+    # A second thread gains little and can cost tenfold on a busy machine.
+    with threadpool_limits(limits=1, user_api="blas"):
         step("state matrix", 0.0)
         state = state_matrix(terms)
         step("all roots", 0.1)

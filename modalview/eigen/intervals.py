@@ -33,7 +33,14 @@ class Intervals:
     separate: bool
 
 
-def enclose(energy: Energy, shapes: Array, found: Rayleigh, zeros: int) -> Intervals:
+def enclose(
+    energy: Energy,
+    shapes: Array,
+    found: Rayleigh,
+    zeros: int,
+    *,
+    outside: tuple[float, float] = (-np.inf, np.inf),
+) -> Intervals:
     """Enclose every eigenvalue of the pencil, from Rayleigh quotients in ascending order.
 
     Parameters
@@ -46,6 +53,9 @@ def enclose(energy: Energy, shapes: Array, found: Rayleigh, zeros: int) -> Inter
         Of these shapes.
     zeros : int
         Rigid-body modes known from structure, not among the shapes; m + zeros are all modes.
+    outside : (low, high)
+        Or all that lie between these, proven by counts: no other eigenvalue does. Where an interval reaches
+        beyond them they prove nothing, the linear intervals stand, and nothing is ``separate``.
 
     Notes
     -----
@@ -59,14 +69,17 @@ def enclose(energy: Energy, shapes: Array, found: Rayleigh, zeros: int) -> Inter
     """
     runs = _separate_runs(energy, shapes, found)
     lower, upper = np.empty(found.quotient.size), np.empty(found.quotient.size)
+    inside = all(outside[0] <= run.low and run.high <= outside[1] for run in runs)
     for index, run in enumerate(runs):
-        below = runs[index - 1].high if index else -np.inf
-        above = runs[index + 1].low if index + 1 < len(runs) else np.inf
+        below = runs[index - 1].high if index else outside[0]
+        above = runs[index + 1].low if index + 1 < len(runs) else outside[1]
         if zeros:
             below, above = _beside_zero(run, below, above)
         where = slice(run.start, run.stop)
+        if not inside:
+            below, above = run.high, run.low  # no gap is known
         lower[where], upper[where] = _tightened(found, run, below, above)
-    separate = all(np.isfinite(run.radius) for run in runs)
+    separate = inside and all(np.isfinite(run.radius) for run in runs)
     return Intervals(lower, upper, tuple((run.start, run.stop) for run in runs), separate)
 
 
