@@ -85,7 +85,7 @@ def either(of_file: Run, of_matrices: Run) -> Run:
             if lone:
                 raise UsageError(f"--{lone[0]} goes with --stiffness; a .keepclear file holds its own values")
             if not named:
-                raise UsageError("name a .keepclear file, or a stiffness matrix by --stiffness K.mtx")
+                raise UsageError("name a FILE (.keepclear), or a stiffness matrix by --stiffness K.mtx")
             return of_file(words)
         if named:
             raise UsageError("a .keepclear file and --stiffness are two models; name one of them")
