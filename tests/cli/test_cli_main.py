@@ -121,7 +121,7 @@ class TestWords:
         [
             ([], "required"),
             (["solve", "x"], "solve"),
-            (["check"], "FILE"),
+            (["check"], "keepclear"),
             (["modes", "a", "b"], "unrecognized"),
             (["bounds", "--jsn", "a"], "--jsn"),
             (["picture", "a"], "-o"),
@@ -217,6 +217,15 @@ class TestUnusableInput:
         assert code == 2
         assert good["verdict"] == "clear"
         assert set(spoiled) == {"file", "error"}
+
+    def test_output_that_cannot_be_written_is_told(self, capsys, monkeypatch):
+        class Full:
+            def write(self, _text):
+                raise OSError(28, "No space left on device")
+
+        monkeypatch.setattr("sys.stdout", Full())
+        code, _, err = run(capsys, "modes", demo(ALL_CLEAR))
+        assert (code, err) == (2, "keepclear: the output cannot be written: No space left on device\n")
 
     def test_an_unexpected_failure_is_a_message(self, capsys, monkeypatch):
         def fail(*_):
