@@ -80,6 +80,10 @@ class DampedTerms:
         """Number of roots of det(lambda^2 M + lambda C + K), zero roots included: known from structure."""
         return 2 * self.inertial + self.creeping
 
+    def normal_resisting(self) -> Array:
+        """Return the dashpot rows (l, N), dense, each of length 1."""
+        return _normal(self.resisting)
+
     def body_motion(self, shapes: ComplexArray) -> ComplexArray:
         """Return x, y, z, rx, ry, rz of every body from coordinates (N, m): complex (m, bodies, 6)."""
         moved = np.asarray(self.to_bodies @ shapes).T
@@ -264,9 +268,7 @@ def _drifting(assembly: Assembly, resisting: sp.csr_array, free: Array, size: in
     """Return how many free motions no dashpot resists, exactly."""
     if free.shape[1] == 0:
         return 0
-    moved = np.linalg.norm(resisting.toarray(), axis=1)
-    normal = resisting.toarray() / np.where(moved > 0, moved, 1.0)[:, None]
-    values = np.linalg.svd(normal @ np.linalg.qr(free)[0], compute_uv=False)
+    values = np.linalg.svd(_normal(resisting) @ np.linalg.qr(free)[0], compute_uv=False)
     if values.size == free.shape[1] and values[-1] > CLEARLY_RESISTED:
         return 0
     if values.max(initial=0.0) == 0:
@@ -277,3 +279,10 @@ def _drifting(assembly: Assembly, resisting: sp.csr_array, free: Array, size: in
         return is_spring(link, term) or f"{link.id}.{term.keys[0]}" in working
 
     return size - exact_rank(assembly.model, assembly.structure.coordinates, resists)
+
+
+def _normal(rows: sp.csr_array) -> Array:
+    dense: Array = rows.toarray()
+    size = np.linalg.norm(dense, axis=1)
+    normal: Array = dense / np.where(size > 0, size, 1.0)[:, None]
+    return normal

@@ -221,9 +221,7 @@ def drifting_motions(terms: DampedTerms) -> Array:
     The null space of the dashpots over the free motions; its dimension is known exactly.
     """
     basis = np.linalg.qr(terms.free)[0]
-    moved = terms.resisting.toarray() @ basis
-    size = np.linalg.norm(moved, axis=1)
-    turned = np.linalg.svd(moved / np.where(size > 0, size, 1.0)[:, None], full_matrices=True)[2]
+    turned = np.linalg.svd(terms.normal_resisting() @ basis, full_matrices=True)[2]
     found: Array = basis @ turned[len(turned) - terms.drifting :].T
     return found
 
