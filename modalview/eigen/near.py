@@ -13,10 +13,11 @@ from modalview.eigen.gathered import ascending, gathered
 from modalview.eigen.intervals import Intervals, enclose
 from modalview.eigen.modes import Count, Modes
 from modalview.eigen.near_certificate import Certificate
-from modalview.eigen.near_hunt import Hunt
+from modalview.eigen.near_hunt import TIE, Hunt
 from modalview.eigen.near_search import Progress
+from modalview.eigen.near_small import SMALL, chosen
 from modalview.eigen.rayleigh import Energy
-from modalview.eigen.solve import never
+from modalview.eigen.solve import find_modes, never
 from modalview.eigen.threads import one_blas_thread
 from modalview.errors import CancelledError, InputError
 
@@ -113,7 +114,10 @@ def find_near(
         elastic = pencil.modes - pencil.rigid_body.shape[1]
         hunt = Hunt(pencil, sigma, min(count, elastic), step).complete()
         step("error bounds", 0.9)
-        return _weighed(pencil, hunt, rigid_body=rigid_body)
+        found = _weighed(pencil, hunt, rigid_body=rigid_body)
+    if found.modes.complete or rigid_body or pencil.modes > SMALL:
+        return found
+    return _from_all(pencil, found, count)
 
 
 def _check(pencil: Pencil, sigma: float, count: int) -> None:
@@ -153,6 +157,14 @@ def _weighed(pencil: Pencil, hunt: Hunt, *, rigid_body: bool) -> NearModes:
         certificate=certificate if sure is not None else replace(certificate, counted=None),
         history=tuple(entry for search in hunt.searches for entry in search.history),
     )
+
+
+def _from_all(pencil: Pencil, found: NearModes, count: int) -> NearModes:
+    """Where counts do not decide on a small model, find all of its modes and choose."""
+    modes, first, certificate = chosen(find_modes(pencil), found.sigma, count, TIE)
+    numbers = first + np.arange(modes.number)
+    numbers[modes.unstable :] += (first - 1 < modes.unstable) * pencil.rigid_body.shape[1]
+    return NearModes(found.sigma, modes, tuple(numbers.tolist()), certificate, found.history)
 
 
 def _certificate(hunt: Hunt, found: int) -> Certificate:

@@ -8,9 +8,9 @@ import numpy.typing as npt
 
 Array = npt.NDArray[np.float64]
 
-# A second orthogonalisation where the first left less than this share of a vector (W. Kahan's rule "twice
-# is enough", after B. N. Parlett (1980), The Symmetric Eigenvalue Problem, section 6.9).
-CANCELLED = 0.1
+# Orthogonalised again where less than this share of a vector is kept (W. Kahan's rule "twice is enough",
+# after B. N. Parlett (1980), The Symmetric Eigenvalue Problem, section 6.9).
+KEPT, PASSES = 0.7, 3
 # What is left of a vector below this share lies in the span already.
 DEPENDENT = 1e-11
 # Residual of the inverse, relative to its eigenvalue, at which a mode is found.
@@ -85,6 +85,7 @@ class Krylov:
     images: Array = field(init=False)
     size: int = 0
     multiplied: int = 0
+    starts: int = 0
 
     def __post_init__(self) -> None:
         self.basis = np.empty((self.kept_out.shape[0], GROWTH), order="F")
@@ -99,13 +100,14 @@ class Krylov:
         """Queue starting vectors (modes, p)."""
         for vector in vectors.T:
             self._append(vector.copy())
+        self.starts = self.size
 
     def extend(self, dimension: int, step: Callable[[], None]) -> None:
         """Multiply until the subspace has this dimension, or nothing new comes."""
         while self.multiplied < dimension and not self.exhausted:
             step()
             column = self.multiplied
-            entries = self._append(self.operator(self.basis[:, column]))
+            entries = self._append(self.operator(self.basis[:, column]), max(0, column - self.starts))
             self.images[: entries.size, column] = entries
             self.multiplied += 1
 
@@ -128,20 +130,21 @@ class Krylov:
         vectors: Array = self.basis[:, : self.multiplied] @ ritz.turn[:, chosen]
         return vectors
 
-    def _append(self, vector: Array) -> Array:
-        """Orthogonalise a vector and queue what is left; return its entries in the basis."""
+    def _append(self, vector: Array, since: int = 0) -> Array:
+        """Orthogonalise a vector and queue what is left; return its entries in the basis.
+
+        Only basis vectors ``since`` some place can make up more than rounding of it, so these go first: one
+        pass over the whole basis is then enough.
+        """
         whole = float(np.linalg.norm(vector))
         entries = np.zeros(self.size + 1)
-        left = whole
-        for _ in range(3):
+        self._subtract(vector, entries, since)
+        left = float(np.linalg.norm(vector))
+        for _ in range(PASSES):
             before = left
-            if self.kept_out.shape[1]:
-                vector -= self.kept_out @ (self.kept_out.T @ vector)
-            part = self.basis[:, : self.size].T @ vector
-            vector -= self.basis[:, : self.size] @ part
-            entries[:-1] += part
+            self._subtract(vector, entries, 0)
             left = float(np.linalg.norm(vector))
-            if left > CANCELLED * before or left <= DEPENDENT * whole:
+            if left > KEPT * before or left <= DEPENDENT * whole:
                 break
         if left <= DEPENDENT * whole:
             return entries[:-1]
@@ -150,6 +153,14 @@ class Krylov:
         self.size += 1
         entries[-1] = left
         return entries
+
+    def _subtract(self, vector: Array, entries: Array, since: int) -> None:
+        if self.kept_out.shape[1]:
+            vector -= self.kept_out @ (self.kept_out.T @ vector)
+        span = self.basis[:, since : self.size]
+        part = span.T @ vector
+        vector -= span @ part
+        entries[since : self.size] += part
 
     def _reserve(self) -> None:
         room = self.basis.shape[1]
