@@ -8,7 +8,7 @@ import numpy as np
 import numpy.typing as npt
 
 from modalview.model.parts import Body, DefaultTolerance, InertiaTensor, Link
-from modalview.model.values import Tolerance, Value
+from modalview.model.values import Entry, Tolerance, Value
 
 
 class Case(StrEnum):
@@ -34,6 +34,10 @@ class Parameter:
         damping not at all).
     nominal, low, high : float
         In SI; low = high = nominal for a value taken as exact.
+    entry : Entry or None
+        As typed; None for the factor 1 of an inertia tensor.
+    tolerance : Tolerance or None
+        As typed.
     """
 
     id: str
@@ -43,6 +47,8 @@ class Parameter:
     nominal: float
     low: float
     high: float
+    entry: Entry | None = None
+    tolerance: Tolerance | None = None
 
     @property
     def exact(self) -> bool:
@@ -73,7 +79,7 @@ def parameter(
     tolerance = next((t for t in (value.tolerance, *fallbacks) if t is not None), None)
     low, high = tolerance.limits(value.si) if tolerance else (value.si, value.si)
     name = f"{part.id}.{key}"
-    return Parameter(name, part.id, shown_name(part), family, value.si, low, high)
+    return Parameter(name, part.id, shown_name(part), family, value.si, low, high, value.entry, tolerance)
 
 
 def inertia_scale(body: Body, tensor: InertiaTensor, default: DefaultTolerance | None) -> Parameter:
@@ -81,7 +87,7 @@ def inertia_scale(body: Body, tensor: InertiaTensor, default: DefaultTolerance |
     fallbacks = (tensor.tolerance, body.tolerance, default.mass if default else None)
     tolerance = next((t for t in fallbacks if t is not None), None)
     low, high = tolerance.limits(1.0) if tolerance else (1.0, 1.0)
-    return Parameter(f"{body.id}.inertia", body.id, shown_name(body), "mass", 1.0, low, high)
+    return Parameter(f"{body.id}.inertia", body.id, shown_name(body), "mass", 1.0, low, high, None, tolerance)
 
 
 def values_at(parameters: tuple[Parameter, ...], case: Case) -> npt.NDArray[np.float64]:

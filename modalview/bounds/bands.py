@@ -1,11 +1,26 @@
 """How many modes lie in a band: now, at some values within tolerance, at all of them."""
 
 from dataclasses import dataclass, field
+from fractions import Fraction
+from typing import Protocol
 
 import numpy as np
 
 from modalview.factor.counts import Count, count_at_most, count_below
 from modalview.factor.shifted import ShiftedPencil
+
+# An edge of a band: rad/s, or turns per second as a fraction where counts are exact.
+Edge = float | Fraction
+
+
+class Counter(Protocol):
+    """Counts the modes of one case on either side of an edge."""
+
+    def at_most(self, edge: Edge) -> Count:
+        """Count the modes at or below an edge: never fewer than there are."""
+
+    def below(self, edge: Edge) -> Count:
+        """Count the modes below an edge, rigid-body modes at least: never more than there are."""
 
 
 @dataclass(frozen=True, slots=True, eq=False)
@@ -26,6 +41,37 @@ class Cases:
     soft_heavy: ShiftedPencil
     stiff_light: ShiftedPencil
 
+    def counters(self) -> "Counters":
+        """Return what counts each case in floating point."""
+        found = {
+            id(shifted): Floating(shifted) for shifted in (self.nominal, self.soft_heavy, self.stiff_light)
+        }
+        return Counters(*(found[id(s)] for s in (self.nominal, self.soft_heavy, self.stiff_light)))
+
+
+@dataclass(frozen=True, slots=True, eq=False)
+class Counters:
+    """What counts the three cases; the same object thrice where nothing has a tolerance."""
+
+    nominal: Counter
+    soft_heavy: Counter
+    stiff_light: Counter
+
+
+@dataclass(frozen=True, slots=True, eq=False)
+class Floating:
+    """Counts by floating-point factors with a proven uncertainty; edges in rad/s."""
+
+    shifted: ShiftedPencil
+
+    def at_most(self, edge: Edge) -> Count:
+        """Count upward of the square, which is rounded."""
+        return count_at_most(self.shifted, float(np.nextafter(float(edge) ** 2, np.inf)))
+
+    def below(self, edge: Edge) -> Count:
+        """Count downward of the square; that of zero stays zero: nothing below it lies in any band."""
+        return count_below(self.shifted, max(0.0, float(np.nextafter(float(edge) ** 2, -np.inf))))
+
 
 @dataclass(frozen=True, slots=True)
 class EdgeCount:
@@ -37,15 +83,15 @@ class EdgeCount:
         "nominal", "soft-heavy" or "stiff-light".
     side : str
         "at most" or "below".
-    omega : float
-        Edge asked for, rad/s.
+    edge : float or Fraction
+        Edge asked for, as the counter takes it.
     count : Count
         With the edge used, rad**2/s**2, and its uncertainty.
     """
 
     case: str
     side: str
-    omega: float
+    edge: Edge
     count: Count
 
 
@@ -92,7 +138,7 @@ class BandCount:
     def undecided(self) -> tuple[str, ...]:
         """The counts that rounding left open, in words."""
         return tuple(
-            f"{edge.case}, {edge.side} {edge.omega:.6g} rad/s"
+            f"{edge.case}, {edge.side} {float(edge.edge):.6g} rad/s"
             for edge in self.evidence
             if edge.count.number is None
         )
@@ -101,15 +147,22 @@ class BandCount:
 def count_band(
     cases: Cases, nominal_band: tuple[float, float], tolerance_band: tuple[float, float] | None = None
 ) -> BandCount:
+    """Count the modes in a band in floating point; see ``count_band_by``. Edges in rad/s."""
+    return count_band_by(cases.counters(), nominal_band, tolerance_band or nominal_band)
+
+
+def count_band_by(
+    counters: Counters, nominal_band: tuple[Edge, Edge], tolerance_band: tuple[Edge, Edge]
+) -> BandCount:
     """Count the modes in a band at nominal values, at some and at all values within tolerance.
 
     Parameters
     ----------
-    cases : Cases
+    counters : Counters
     nominal_band : (lo, hi)
-        rad/s, ends included.
-    tolerance_band : (lo, hi) or None
-        The same widened by the speed's tolerance, for ``possible``; None is ``nominal_band``.
+        Ends included.
+    tolerance_band : (lo, hi)
+        The same widened by the speed's tolerance, for ``possible``.
 
     Returns
     -------
@@ -125,22 +178,18 @@ def count_band(
     where nothing has a tolerance.
     """
     lo, hi = nominal_band
-    low, high = tolerance_band or nominal_band
-    tally = _Tally()
-    exact = cases.soft_heavy is cases.nominal and cases.stiff_light is cases.nominal
+    low, high = tolerance_band
+    tally, nominal = _Tally(), ("nominal", counters.nominal)
+    exact = counters.soft_heavy is counters.nominal and counters.stiff_light is counters.nominal
     if exact and (low, high) == (lo, hi):
-        inside = _difference(
-            tally.at_most("nominal", cases.nominal, hi), tally.below("nominal", cases.nominal, lo)
-        )
+        inside = _difference(tally.at_most(*nominal, hi), tally.below(*nominal, lo))
         return BandCount(inside, inside, inside, tuple(tally.evidence))
     names = ("nominal", "nominal") if exact else ("soft-heavy", "stiff-light")
-    soft, stiff = (names[0], cases.soft_heavy), (names[1], cases.stiff_light)
+    soft, stiff = (names[0], counters.soft_heavy), (names[1], counters.stiff_light)
     possible = _difference(tally.at_most(*soft, high), tally.below(*stiff, low))
     if possible == 0 and low <= lo <= hi <= high:
         return BandCount(0, 0, 0, tuple(tally.evidence))
-    inside = _difference(
-        tally.at_most("nominal", cases.nominal, hi), tally.below("nominal", cases.nominal, lo)
-    )
+    inside = _difference(tally.at_most(*nominal, hi), tally.below(*nominal, lo))
     if inside == 0:
         return BandCount(0, possible, 0, tuple(tally.evidence))
     certain = inside if exact else _difference(tally.below(*stiff, hi), tally.at_most(*soft, lo))
@@ -153,16 +202,13 @@ class _Tally:
 
     evidence: list[EdgeCount] = field(default_factory=list)
 
-    def at_most(self, case: str, shifted: ShiftedPencil, omega: float) -> int | None:
-        count = count_at_most(shifted, float(np.nextafter(omega * omega, np.inf)))
-        self.evidence.append(EdgeCount(case, "at most", omega, count))
-        return count.number
+    def at_most(self, case: str, counter: Counter, edge: Edge) -> int | None:
+        self.evidence.append(EdgeCount(case, "at most", edge, counter.at_most(edge)))
+        return self.evidence[-1].count.number
 
-    def below(self, case: str, shifted: ShiftedPencil, omega: float) -> int | None:
-        # a square of zero stays zero: nothing below it lies in any band
-        count = count_below(shifted, max(0.0, float(np.nextafter(omega * omega, -np.inf))))
-        self.evidence.append(EdgeCount(case, "below", omega, count))
-        return count.number
+    def below(self, case: str, counter: Counter, edge: Edge) -> int | None:
+        self.evidence.append(EdgeCount(case, "below", edge, counter.below(edge)))
+        return self.evidence[-1].count.number
 
 
 def _difference(upper: int | None, lower: int | None) -> int | None:

@@ -102,6 +102,8 @@ class Check:
         The mode of ``worst_separation``: one that can lie in the band, if any can.
     drives : tuple of ModeDrive
         For the modes in or nearest to the band; empty before the solve.
+    proof : str
+        What proves the verdict: "by counts" (floating point, with outward edges) or "exactly" (integers).
     """
 
     band: Band
@@ -120,3 +122,4 @@ class Check:
     worst_separation: float | None = None
     worst_mode: int | None = None
     drives: tuple[ModeDrive, ...] = ()
+    proof: str = "by counts"

@@ -2,9 +2,11 @@
 
 from dataclasses import dataclass
 
-from modalview.bounds.bands import BandCount, Cases, count_band
+from modalview.bounds.bands import BandCount, Cases, Counters, Edge, count_band_by
 from modalview.resonance.results import Band, Check, Verdict
 from modalview.resonance.wording import band_text, modes_text
+
+BY_COUNTS, EXACTLY = "by counts", "exactly"
 
 
 @dataclass(frozen=True, slots=True)
@@ -30,8 +32,41 @@ class Exactness:
         return f" ({self.exact} {'value' if self.exact == 1 else 'values'} taken as exact)"
 
 
+@dataclass(frozen=True, slots=True, eq=False)
+class Question:
+    """A band to be judged: its edges as the counters take them, and what counts.
+
+    Parameters
+    ----------
+    band : Band
+        As shown.
+    nominal, tolerance : pair of edges
+    counters : Counters
+    modes : int
+        Of the whole model.
+    proof : str
+        What proves the answer: "by counts", "exactly".
+    """
+
+    band: Band
+    nominal: tuple[Edge, Edge]
+    tolerance: tuple[Edge, Edge]
+    counters: Counters
+    modes: int
+    proof: str
+
+    def counted(self) -> BandCount:
+        """Count the three cases."""
+        return count_band_by(self.counters, self.nominal, self.tolerance)
+
+    def counted_at_nominal(self) -> BandCount:
+        """Count the nominal case alone in the band as widened by the speed's tolerance."""
+        alone = self.counters.nominal
+        return count_band_by(Counters(alone, alone, alone), self.tolerance, self.tolerance)
+
+
 def judge(band: Band, cases: Cases, exactness: Exactness) -> Check:
-    """Return the verdict of one check, from counts alone.
+    """Return the verdict of one check, from counts in floating point alone.
 
     Parameters
     ----------
@@ -40,6 +75,13 @@ def judge(band: Band, cases: Cases, exactness: Exactness) -> Check:
         The model at nominal, soft-heavy and stiff-light values, ready to be counted.
     exactness : Exactness
         For the wording of "clear".
+    """
+    counters, modes = cases.counters(), cases.nominal.modes
+    return answer(Question(band, band.nominal, band.tolerance, counters, modes, BY_COUNTS), exactness)
+
+
+def answer(question: Question, exactness: Exactness) -> Check:
+    """Return the verdict on a band.
 
     Notes
     -----
@@ -48,56 +90,63 @@ def judge(band: Band, cases: Cases, exactness: Exactness) -> Check:
     that undecided. R. Courant and D. Hilbert, Methods of Mathematical Physics I, chapter 1: ordered
     natural frequencies only rise with any stiffness and only fall with any mass (from memory).
     """
-    count = count_band(cases, band.nominal, band.tolerance)
+    count = question.counted()
     if count.inside is None or count.inside > 0:
-        return _in_band(band, count)
+        return _in_band(question, count)
     if count.possible is None or count.possible > 0:
-        return _nominal_only(band, count, cases)
-    return _clear(band, count, cases, exactness)
+        return _nominal_only(question, count)
+    return _clear(question, count, exactness)
 
 
-def _clear(band: Band, count: BandCount, cases: Cases, exactness: Exactness) -> Check:
+def _clear(question: Question, count: BandCount, exactness: Exactness) -> Check:
     # No mode is possible inside, so that as many lie below the band at every value within tolerance.
-    above_all = count.below == cases.nominal.modes
+    above_all = count.below == question.modes
     wording = ("clear in this model" if above_all else "clear") + exactness.words
+    text, proven = band_text(question.band), f"proven {question.proof}"
     if above_all:
-        reason = f"{band_text(band)} lies above every mode of this model; local modes are not modelled"
+        reason = f"{text} lies above every mode of this model; local modes are not modelled"
+        reason += _exactly(question)
     elif exactness.exact == exactness.values:
-        reason = f"no mode within {band_text(band)}; proven by counts at the values as given"
+        reason = f"no mode within {text}; {proven} at the values as given"
     else:
-        reason = f"no mode within {band_text(band)} at any value within tolerance; proven by counts"
-    return _check(band, count, Verdict.CLEAR, wording, reason)
+        reason = f"no mode within {text} at any value within tolerance; {proven}"
+    return _check(question, count, Verdict.CLEAR, wording, reason)
 
 
-def _in_band(band: Band, count: BandCount) -> Check:
+def _in_band(question: Question, count: BandCount) -> Check:
+    text = band_text(question.band)
     if count.inside is None:
-        reason = f"rounding leaves undecided whether a mode lies within {band_text(band)}; taken as one"
+        reason = f"rounding leaves undecided whether a mode lies within {text}; taken as one"
     else:
         always = ", at any value within tolerance" if count.certain else ""
-        reason = f"{modes_text(count.inside)} within {band_text(band)}{always}"
-    return _check(band, count, Verdict.IN_BAND, Verdict.IN_BAND.value, reason)
+        reason = f"{modes_text(count.inside)} within {text}{always}{_exactly(question)}"
+    return _check(question, count, Verdict.IN_BAND, Verdict.IN_BAND.value, reason)
 
 
-def _nominal_only(band: Band, count: BandCount, cases: Cases) -> Check:
-    deciding = None
+def _exactly(question: Question) -> str:
+    return "; proven exactly" if question.proof == EXACTLY else ""
+
+
+def _nominal_only(question: Question, count: BandCount) -> Check:
+    deciding, text = None, band_text(question.band)
     if count.possible is None:
-        reason = f"rounding leaves undecided whether some values within tolerance reach {band_text(band)}"
+        reason = f"rounding leaves undecided whether some values within tolerance reach {text}"
     else:
-        deciding, both = _deciding_case(band, count, cases)
+        deciding, both = _deciding_case(question, count)
         reach = f"the {deciding} case reaches" if deciding else "the tolerance of the speed alone reaches"
         reach = "the soft-heavy and the stiff-light case both reach" if both else reach
-        reason = f"no mode lies in the band at nominal values, but {reach} {band_text(band)}"
-    return _check(band, count, Verdict.NOMINAL_ONLY, Verdict.NOMINAL_ONLY.value, reason, deciding)
+        reason = f"no mode lies in the band at nominal values, but {reach} {text}{_exactly(question)}"
+    return _check(question, count, Verdict.NOMINAL_ONLY, Verdict.NOMINAL_ONLY.value, reason, deciding)
 
 
-def _deciding_case(band: Band, count: BandCount, cases: Cases) -> tuple[str | None, bool]:
+def _deciding_case(question: Question, count: BandCount) -> tuple[str | None, bool]:
     """Return which case brings a mode into a band that is empty at nominal values, and whether both do.
 
     Soft-heavy brings modes down past the upper edge, stiff-light up past the lower one; the one that
     moves more where both do. None where the band as widened by the speed tolerance holds a mode at
     nominal values already.
     """
-    here = count_band(Cases(cases.nominal, cases.nominal, cases.nominal), band.tolerance)
+    here = question.counted_at_nominal()
     if here.inside != 0:
         return None, False
     fallen = _number(count, "soft-heavy", "at most") - _number(here, "nominal", "at most")
@@ -111,10 +160,15 @@ def _number(count: BandCount, case: str, side: str) -> int:
 
 
 def _check(
-    band: Band, count: BandCount, verdict: Verdict, wording: str, reason: str, deciding: str | None = None
+    question: Question,
+    count: BandCount,
+    verdict: Verdict,
+    wording: str,
+    reason: str,
+    deciding: str | None = None,
 ) -> Check:
     return Check(
-        band=band,
+        band=question.band,
         verdict=verdict,
         wording=wording,
         reason=reason,
@@ -125,6 +179,7 @@ def _check(
         upto=count.upto,
         deciding_case=deciding,
         undecided=count.undecided,
+        proof=question.proof,
     )
 
 

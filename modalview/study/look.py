@@ -9,6 +9,7 @@ from modalview.bounds.bands import Cases
 from modalview.bounds.before import before_solve
 from modalview.errors import CancelledError
 from modalview.resonance.bands import bands
+from modalview.resonance.exactly import judge_exactly
 from modalview.resonance.results import Check
 from modalview.resonance.unchecked import not_checked
 from modalview.resonance.verdict import Exactness, judge, worst
@@ -32,6 +33,8 @@ def look(request: Request, previous: Outlook | None = None) -> Outlook:
     ------
     ModelFaultsError
         The model cannot be analysed; names the part.
+    InputError
+        Exact counts are asked for and the model is too large for them.
     CancelledError
     """
     start = perf_counter()
@@ -40,7 +43,7 @@ def look(request: Request, previous: Outlook | None = None) -> Outlook:
     _stop_if(request)
     bounds = before_solve(assembly.pencil())
     _stop_if(request)
-    checks = _checks(request, assembly)
+    checks, proof_notes = _checks(request, assembly)
     return Outlook(
         request=request,
         assembly=assembly,
@@ -50,19 +53,39 @@ def look(request: Request, previous: Outlook | None = None) -> Outlook:
         sentence=sentence(model, checks),
         intervals=scale_intervals(assembly.pencil(), checks),
         not_checked=not_checked(model),
-        notes=_notes(assembly),
+        notes=(*_notes(assembly), *proof_notes),
         seconds=perf_counter() - start,
     )
 
 
-def _checks(request: Request, assembly: Assembly) -> tuple[Check, ...]:
+def _checks(request: Request, assembly: Assembly) -> tuple[tuple[Check, ...], tuple[str, ...]]:
+    """Return the checks, and what a reader must know of their proof."""
     exactness = Exactness(len(assembly.exact_values), len(assembly.matter))
+    if request.exact:
+        return _exact_checks(request, assembly, exactness)
     cases = Cases(*(assembly.pencil(case).shifted for case in Case))
     found = []
     for band in bands(request.model):
         _stop_if(request)
         found.append(judge(band, cases, exactness))
-    return tuple(found)
+    return tuple(found), ()
+
+
+def _exact_checks(
+    request: Request, assembly: Assembly, exactness: Exactness
+) -> tuple[tuple[Check, ...], tuple[str, ...]]:
+    def step(what: str, share: float) -> None:
+        _stop_if(request)
+        if request.progress is not None:
+            request.progress(what, share)
+
+    found = judge_exactly(assembly, exactness, step)
+    notes = ["counts proven exactly: integers, from the values as typed, edges rounded outward by 1e-19"]
+    if found.rounded:
+        notes.append(
+            f"taken as the nearest double, as angles and roots are no fractions: {', '.join(found.rounded)}"
+        )
+    return found.checks, tuple(notes) if found.checks else ()
 
 
 def _stop_if(request: Request) -> None:

@@ -31,12 +31,15 @@ class Request:
         Asked between steps.
     progress : callable or None
         Told (what is done, share done 0..1).
+    exact : bool
+        Prove the checks by counts without rounding; for models of up to a few hundred degrees of freedom.
     """
 
     model: Model
     number: int = 0
     cancelled: Callable[[], bool] = never
     progress: Callable[[str, float], None] | None = None
+    exact: bool = False
 
 
 @dataclass(frozen=True, slots=True)

@@ -116,6 +116,15 @@ def read_noted(text: str, quantity: Quantity, *, window: bool = False) -> Readin
         raise UnitError(refusal(text, quantity, str(error))) from None
 
 
+def exact_amount(text: str, quantity: Quantity) -> Fraction:
+    """Return a value as it stands in a file, in SI and unrounded; UnitError as for ``read``.
+
+    >>> exact_amount("0.1 mm", q.LENGTH)
+    Fraction(1, 10000)
+    """
+    return _exact(text, quantity, window=False).amount
+
+
 def unit_of(text: str) -> str:
     """Return the unit of a typed value as it was typed, unchecked; "" when there is none.
 
