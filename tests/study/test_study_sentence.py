@@ -9,7 +9,6 @@ from modalview.store import parse_model
 from modalview.study import Request, solve
 from modalview.study.sentence import NOTHING_TO_CHECK, sentence
 
-
 FAN = "1× of 1500 rpm (25.0 Hz)"
 
 
@@ -61,8 +60,8 @@ def said(modes, **machine):
         (
             [(19, "20 %")],
             (
-                ": mode 1 at 19.0 Hz (17.0 to 20.8 over tolerance) is 24.0 % below, but over tolerance it comes "
-                "to −16.7 % (stiff-light); ±20 % is wanted."
+                ": mode 1 at 19.0 Hz (17.0 to 20.8 over tolerance) is 24.0 % below, but over tolerance it "
+                "comes to −16.7 % (stiff-light); ±20 % is wanted."
             ),
         ),
         ([(40, None)], " is clear (values taken as exact)."),
