@@ -46,6 +46,7 @@ CHECK = {
     "verdict",
     "wording",
     "reason",
+    "proven",
     "excitation_hz",
     "band_hz",
     "tolerance_band_hz",
