@@ -161,10 +161,8 @@ def _weighed(pencil: Pencil, hunt: Hunt, *, rigid_body: bool) -> NearModes:
 
 def _from_all(pencil: Pencil, found: NearModes, count: int) -> NearModes:
     """Where counts do not decide on a small model, find all of its modes and choose."""
-    modes, first, certificate = chosen(find_modes(pencil), found.sigma, count, TIE)
-    numbers = first + np.arange(modes.number)
-    numbers[modes.unstable :] += (first - 1 < modes.unstable) * pencil.rigid_body.shape[1]
-    return NearModes(found.sigma, modes, tuple(numbers.tolist()), certificate, found.history)
+    modes, numbers, certificate = chosen(find_modes(pencil), found.sigma, count, TIE)
+    return NearModes(found.sigma, modes, numbers, certificate, found.history)
 
 
 def _certificate(hunt: Hunt, found: int) -> Certificate:

@@ -1,6 +1,7 @@
 """Modes near a frequency chosen from all modes, where the model is small enough for that."""
 
 from dataclasses import replace
+from itertools import pairwise
 
 import numpy as np
 
@@ -11,7 +12,7 @@ from modalview.eigen.near_certificate import Certificate
 SMALL = 500
 
 
-def chosen(modes: Modes, sigma: float, count: int, tie: float) -> tuple[Modes, int, Certificate]:
+def chosen(modes: Modes, sigma: float, count: int, tie: float) -> tuple[Modes, tuple[int, ...], Certificate]:
     """Choose the modes whose eigenvalues lie nearest to a value, rigid-body modes left out.
 
     Parameters
@@ -29,8 +30,8 @@ def chosen(modes: Modes, sigma: float, count: int, tie: float) -> tuple[Modes, i
     -------
     modes : Modes
         The chosen ones.
-    first : int
-        Number of the first of them among all, from 1.
+    numbers : tuple of int
+        Their numbers among all, from 1.
     certificate : Certificate
         From the intervals of all modes, which hold one eigenvalue each where ``modes.complete``.
     """
@@ -44,7 +45,7 @@ def chosen(modes: Modes, sigma: float, count: int, tie: float) -> tuple[Modes, i
     picked = [start + i for i in np.flatnonzero(other[start:stop]).tolist()]
     low, high = float(modes.lower[start]), float(modes.upper[stop - 1])
     certificate = Certificate(low, high, len(picked) if modes.complete else None, len(picked), start)
-    return _sliced(modes, picked), start + 1, certificate
+    return _sliced(modes, picked), tuple(place + 1 for place in picked), certificate
 
 
 def _sliced(modes: Modes, picked: list[int]) -> Modes:
@@ -63,5 +64,5 @@ def _sliced(modes: Modes, picked: list[int]) -> Modes:
         shapes=modes.shapes[:, where],
         rigid_body_modes=0,
         unstable=int(np.sum(where < modes.unstable)),
-        groups=tuple(zip(edges[:-1], edges[1:], strict=True)),
+        groups=tuple(pairwise(edges)),
     ).frozen()
