@@ -1,0 +1,52 @@
+"""The command that makes a model file of two tables."""
+
+import argparse
+from pathlib import Path
+
+from modalview.cli.printing import OK, say
+from modalview.errors import FileAccessError, UsageError
+from modalview.model.parts import Motion
+from modalview.store import save_model
+from modalview.store.tables_network import COORDINATES, import_network
+from modalview.units import quantities as q
+
+SUFFIX = ".keepclear"
+UNITS = (("length", q.LENGTH), ("mass", q.MASS), ("stiffness", q.STIFFNESS))
+
+
+def prepare(parser: argparse.ArgumentParser) -> None:
+    """Add the words of the command."""
+    parser.add_argument("--nodes", type=Path, required=True, metavar="nodes.csv", help="a table of nodes")
+    parser.add_argument(
+        "--springs", type=Path, required=True, metavar="springs.csv", help="a table of springs"
+    )
+    parser.add_argument(
+        "--motion", required=True, choices=[one.value for one in COORDINATES], help="how the nodes move"
+    )
+    for name, quantity in UNITS:
+        about = f"where no heading names the unit of a {name}"
+        parser.add_argument(f"--{name}-unit", metavar=quantity.si_unit, help=about)
+    parser.add_argument(
+        "-o", "--output", type=Path, required=True, metavar=f"OUT{SUFFIX}", help="where the model goes"
+    )
+    parser.add_argument("--replace", action="store_true", help="write over a file; it is kept as .bak")
+    parser.set_defaults(run=run_import)
+
+
+def run_import(words: argparse.Namespace) -> int:
+    """Write a model made of two tables; nothing is written unless all of it was read."""
+    target = words.output
+    if target.suffix != SUFFIX:
+        raise UsageError(f"-o names a model file, such as model{SUFFIX}; found {str(target)!r}")
+    if target.exists() and not words.replace:
+        raise FileAccessError(f"{target} is there already; choose another name, or say --replace")
+    units = {quantity: text for name, quantity in UNITS if (text := getattr(words, f"{name}_unit"))}
+    found = import_network(words.nodes, words.springs, Motion(words.motion), units)
+    save_model(found.model, target, known=None)
+    model = found.model
+    parts = [f"{len(model.bodies)} nodes with mass", f"{len(model.supports)} on the ground"]
+    say(f"{target} written: {', '.join(parts)}, {len(model.links)} springs, {model.motion}")
+    for note in found.notes:
+        say(note)
+    say("It has no machine yet: add its speed, orders and the margin wanted before a check.")
+    return OK
