@@ -8,7 +8,7 @@ import sys
 from collections.abc import Sequence
 from pathlib import Path
 
-COMMANDS = ("bounds", "modes", "check", "picture")
+COMMANDS = ("bounds", "modes", "check", "import", "picture")
 HELP = ("-h", "--help", "--version")
 _NO_SCREEN = """\
 keepclear: there is no screen here to open a window on.

@@ -5,7 +5,7 @@ import sys
 from collections.abc import Callable
 from pathlib import Path
 
-from modalview.cli import documents, matrices, texts
+from modalview.cli import documents, imports, matrices, texts
 from modalview.cli.printing import OK, UNUSABLE, progress, say, say_json, verdict_code
 from modalview.errors import KeepclearError
 from modalview.model.parts import Model
@@ -118,5 +118,6 @@ COMMANDS: dict[str, tuple[str, Prepare]] = {
     "bounds": ("tell what is known of the modes before any solve", _prepare_bounds),
     "modes": ("find the modes, with their range over all tolerances", _prepare_modes),
     "check": ("prove whether any speed or order meets a mode, over all tolerances", _prepare_check),
+    "import": ("make a model file of a table of nodes and a table of springs", imports.prepare),
     "picture": ("draw the sheet, a mode or the frequency scale, without a screen", _prepare_picture),
 }
