@@ -3,6 +3,8 @@
 from dataclasses import dataclass
 from enum import StrEnum
 
+from modalview.bounds.bands import EdgeCount
+
 
 class Verdict(StrEnum):
     """The three answers, from best to worst."""
@@ -104,6 +106,8 @@ class Check:
         For the modes in or nearest to the band; empty before the solve.
     proof : str
         What proves the verdict: "by counts" (floating point, with outward edges) or "exactly" (integers).
+    evidence : tuple of EdgeCount
+        Every count the verdict rests on, in the order made.
     """
 
     band: Band
@@ -123,3 +127,4 @@ class Check:
     worst_mode: int | None = None
     drives: tuple[ModeDrive, ...] = ()
     proof: str = "by counts"
+    evidence: tuple[EdgeCount, ...] = ()

@@ -180,6 +180,7 @@ def _check(
         deciding_case=deciding,
         undecided=count.undecided,
         proof=question.proof,
+        evidence=count.evidence,
     )
 
 
