@@ -6,11 +6,13 @@ from collections.abc import Callable
 from pathlib import Path
 
 from modalview.cli import documents, imports, matrices, texts
+from modalview.cli.damped import damped_document, damped_text
 from modalview.cli.printing import OK, UNUSABLE, progress, say, say_json, verdict_code
 from modalview.errors import KeepclearError
 from modalview.model.parts import Model
 from modalview.store import read_model
 from modalview.study import Request, Solution, look, solve
+from modalview.study.damped import damped
 
 Prepare = Callable[[argparse.ArgumentParser], None]
 PICTURES = ("sheet", "scale", "mode")
@@ -56,17 +58,18 @@ def run_modes(words: argparse.Namespace) -> int:
     """Print the modes."""
     path, model = _file(words)
     solution = _solved(model)
+    damping = damped(Request(model, progress=progress), solution)
     if words.json:
-        say_json(documents.modes_document(path, solution))
+        say_json({**documents.modes_document(path, solution), **damped_document(damping)})
     else:
-        say(texts.modes_text(solution))
+        say(texts.modes_text(solution, damped_text(damping)))
     return OK
 
 
 def _prepare_check(parser: argparse.ArgumentParser) -> None:
     parser.add_argument("files", type=Path, nargs="*", metavar="FILE", help="one or more .keepclear files")
     parser.add_argument("--json", action="store_true", help="print JSON: SI, with the unit in each key")
-    parser.add_argument("--exact", action="store_true", help="prove the verdicts by counts without any rounding")
+    parser.add_argument("--exact", action="store_true", help="prove every verdict without any rounding")
     matrices.add_words(parser)
     parser.set_defaults(run=matrices.either(run_check, matrices.run_check))
 

@@ -42,8 +42,8 @@ def bounds_text(outlook: Outlook | MatrixOutlook) -> str:
     return "\n\n".join(parts + _tail(outlook))
 
 
-def modes_text(solution: Solution | MatrixSolution) -> str:
-    """Return the modes as a table, with the evidence."""
+def modes_text(solution: Solution | MatrixSolution, more: str = "") -> str:
+    """Return the modes as a table, with the evidence and what more there is to tell."""
     head = ["mode", "frequency", "over tolerance", "name"]
     rows = [[str(mode.number), _frequency(mode), _range(mode), mode.name] for mode in solution.modes]
     parts = [_title(solution.outlook), table([head, *rows], right=frozenset({0, 1}))]
@@ -58,7 +58,7 @@ def modes_text(solution: Solution | MatrixSolution) -> str:
         )
         if found
     ]
-    parts.append(_lines(solution.evidence))
+    parts += [text for text in (_lines(solution.evidence), more) if text]
     return "\n\n".join(parts + _tail(solution.outlook))
 
 

@@ -28,7 +28,7 @@ Array = npt.NDArray[np.float64]
 ComplexArray = npt.NDArray[np.complex128]
 
 OSCILLATING, OVERDAMPED, DECAY = "oscillating", "overdamped", "decay"
-UNDAMPED_VERDICT = "Verdicts use undamped natural frequencies; damping changes none of them."
+UNDAMPED_VERDICT = "Verdicts use the undamped natural frequencies: they are the same with and without damping."
 
 
 @dataclass(frozen=True, slots=True, eq=False)
