@@ -90,7 +90,7 @@ def _keys(item):
     """Yield the keys of a document; those of shapes and of shares by direction are names of the model."""
     for key, inner in item.items() if isinstance(item, dict) else ():
         yield key
-        if key not in {"shape", "effective_mass"}:
+        if key not in {"shape", "shape_real", "shape_imag", "effective_mass"}:
             yield from _keys(inner)
     for one in item if isinstance(item, list) else ():
         yield from _keys(one)
