@@ -1,6 +1,6 @@
 """Rigid-body motions: what moves without stretching anything, their number exact."""
 
-from collections.abc import Container, Sequence
+from collections.abc import Callable, Sequence
 from fractions import Fraction
 
 import numpy as np
@@ -12,8 +12,8 @@ from modalview.assembly.coordinates import Coordinates
 from modalview.assembly.groups import Groups
 from modalview.assembly.kinematics import ROTATIONS, TRANSLATIONS, cross, minus, places
 from modalview.assembly.locks import speed_ratios
-from modalview.assembly.stretch import stretches
-from modalview.model.parts import FREEDOMS, Gear, Model, Motion
+from modalview.assembly.stretch import Stretch, stretches
+from modalview.model.parts import FREEDOMS, Gear, Link, Model, Motion
 
 Array = npt.NDArray[np.float64]
 
@@ -130,10 +130,15 @@ def _independent(columns: Array) -> Array:
     return np.asarray(q[:, size > 1e-9 * max(float(size.max(initial=0.0)), 1e-300)], dtype=float)
 
 
+def is_spring(_link: Link, term: Stretch) -> bool:
+    """Whether a term is one of stiffness."""
+    return term.family == "stiffness"
+
+
 def exact_rank(
-    model: Model, coordinates: Coordinates, families: Container[str] = frozenset({"stiffness"})
+    model: Model, coordinates: Coordinates, wanted: Callable[[Link, Stretch], bool] = is_spring
 ) -> int:
-    """Return the rank of the rows of springs ("stiffness"), dashpots ("damping") or both.
+    """Return the rank of the rows of the terms wanted, of stiffness unless asked otherwise.
 
     From the numbers as typed, over a large prime field; directions left out of the coordinates included.
     """
@@ -142,7 +147,7 @@ def exact_rank(
     solved: dict[int, dict[int, int]] = {}
     for link in model.links:
         for term in stretches(link, exact):
-            if term.family in families:
+            if wanted(link, term):
                 _insert(_modular(term.form, basis), solved)
     return len(solved)
 
