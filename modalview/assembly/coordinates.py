@@ -39,6 +39,7 @@ from modalview.errors import Fault, ModelFaultsError
 from modalview.model.parts import FREEDOMS, Body, Link, Model, Motion, RigidLink
 
 ExactForm = dict[Freedom, Fraction]
+ONE = Fraction(1)
 
 
 @dataclass(frozen=True, slots=True)
@@ -123,7 +124,7 @@ class _Frames:
         body, name = freedom
         root = self.cluster_of[body]
         if len(self.members[root]) == 1:
-            return {freedom: Fraction(1)}
+            return {freedom: ONE}
         form = {(root, name): Fraction(1)}
         if name in TRANSLATIONS:
             arm = minus(self.exact.centre[body], self.centres[root])
@@ -134,6 +135,8 @@ class _Frames:
 
     def of(self, form: Mapping[Freedom, Fraction]) -> ExactForm:
         """Return a form in the freedoms of bodies as one in the unknowns; supports stand still."""
+        if all(len(self.members.get(key[0], ())) == 1 for key in form):
+            return dict(form)  # single bodies, as most are: nothing to be carried over
         moving = ((entry, self.form(key)) for key, entry in form.items() if key[0] in self.cluster_of)
         return {key: Fraction(entry) for key, entry in combined(moving).items()}
 
@@ -234,6 +237,8 @@ def _point_notes(model: Model) -> list[str]:
 
 
 def _through(form: Mapping[Freedom, Fraction], solved: Mapping[Freedom, ExactForm]) -> ExactForm:
+    if not any(key in solved for key in form):
+        return dict(form)
     parts = ((entry, solved.get(key, {key: Fraction(1)})) for key, entry in form.items())
     return {key: Fraction(entry) for key, entry in combined(parts).items()}
 
@@ -357,7 +362,7 @@ def _to_bodies(
                 rows.append(row)
                 cols.append(column[key])
                 entries.append(float(entry))
-                if float(entry) != entry:
+                if entry is not ONE and float(entry) != entry:
                     unrounded[row, column[key]] = entry
     shape = (len(model.bodies) * len(names), len(column))
     return sp.csr_array((entries, (rows, cols)), shape=shape, dtype=float), unrounded

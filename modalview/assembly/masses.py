@@ -13,6 +13,8 @@ ROTATION_ENTRIES = ("Ixx", "Iyy", "Izz")
 # numbers. The rules of the model let tensors through that miss being possible by as much.
 NO_MOMENT = 1e-9
 
+ONE = Fraction(1)
+
 
 def has_inertia(body: Body, freedom: str) -> bool:
     """Return whether inertia takes part in a freedom of a body."""
@@ -72,7 +74,7 @@ def inertia_forms(body: Body, motion: Motion) -> list[dict[tuple[str, str], Frac
                     for _, axis in turns
                 ),
             ]
-    return [{(body.id, name): Fraction(1)} for name in names]
+    return [{(body.id, name): ONE} for name in names]
 
 
 def mass_parameters(body: Body, default: DefaultTolerance | None, motion: Motion) -> list[Parameter]:

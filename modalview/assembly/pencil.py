@@ -157,6 +157,9 @@ class Pencil:
             terms=terms,
             rigid_modes=self.rigid_body.shape[1],
             definite=definite,
+            rows=self.rows,
+            stiffness=self.stiffness,
+            scale=self.scale,
         )
         return shifted_pencil(parts, self.reused.pattern if self.reused else None)
 

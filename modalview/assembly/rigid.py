@@ -1,12 +1,15 @@
 """Rigid-body motions: what moves without stretching anything, their number exact."""
 
 from collections.abc import Callable, Sequence
+from collections.abc import Set as AbstractSet
 from fractions import Fraction
 
 import numpy as np
 import numpy.typing as npt
 import scipy.linalg as la
 import scipy.sparse as sp
+from scipy.sparse.csgraph import connected_components
+from scipy.sparse.linalg import splu
 
 from modalview.assembly.coordinates import Coordinates
 from modalview.assembly.groups import Groups
@@ -20,8 +23,12 @@ Array = npt.NDArray[np.float64]
 # A Mersenne prime: rank over its field never exceeds the rank over the rationals, and falls short of
 # it only if it divides a determinant of the model by chance.
 PRIME = 2**61 - 1
-# Up to this many coordinates the rank is computed; beyond it is taken from the pieces that float free.
+# Up to this many coordinates matrices are taken dense.
 DENSE_LIMIT = 1500
+# In larger models eigenvalues of the normalised rows^T rows (at most some tens) below this floor need the
+# exact rank: a chain of 100,000 equal links has its least at 2.5e-10, rounding reaches about 1e-14.
+LARGE_FLOOR = 1e-12
+INVERSE_STEPS = 4
 # Relative smallest eigenvalue of the normalised rows^T rows above which full rank is beyond doubt:
 # rounding moves it by less than 1e-12.
 CLEARLY_POSITIVE = 1e-9
@@ -43,25 +50,68 @@ def rigid_body_motions(model: Model, coordinates: Coordinates, rows: sp.csr_arra
     (smallest eigenvalue clearly positive, Weyl's inequality) these are all. Otherwise the exact rank
     of the rows decides, computed over a prime field from the numbers as typed.
     """
-    n = rows.shape[1]
     known = _free_pieces(model, coordinates)
-    if n > DENSE_LIMIT:
-        return known
     gram = _normalised_gram(rows)
-    if _is_definite(gram + known @ known.T):
+    if rows.shape[1] > DENSE_LIMIT:
+        return _of_large_model(model, coordinates, gram, known)
+    if _is_definite(gram.toarray() + known @ known.T):
         return known
-    number = n - exact_rank(model, coordinates)
+    number = rows.shape[1] - exact_rank(model, coordinates)
+    return known if number == known.shape[1] else _softest(gram, number)
+
+
+def _normalised_gram(rows: sp.csr_array) -> sp.csc_array:
+    size = np.sqrt(np.asarray((rows * rows).sum(axis=1)).ravel())
+    scaled = sp.diags_array(1 / np.where(size > 0, size, 1.0)) @ rows
+    return sp.csc_array(scaled.T @ scaled)
+
+
+def _softest(gram: sp.csc_array, number: int) -> Array:
+    """Return the eigenvectors (n, number) of the least eigenvalues."""
+    if gram.shape[0] <= DENSE_LIMIT:
+        basis: Array = np.linalg.eigh(gram.toarray())[1][:, :number]
+        return basis
+    lu = splu(sp.csc_array(gram + LARGE_FLOOR * sp.eye_array(gram.shape[0])))
+    block = np.random.default_rng(0).normal(size=(gram.shape[0], number))
+    for _ in range(INVERSE_STEPS):
+        block = np.linalg.qr(lu.solve(block))[0]
+    return block
+
+
+def _of_large_model(model: Model, coordinates: Coordinates, gram: sp.csc_array, known: Array) -> Array:
+    """Find the motions piece by piece of coordinates, by one sparse factorization where that settles it.
+
+    As many pivots of gram - floor below zero as motions known by construction prove that these are all.
+    Otherwise the exact rank decides for the pieces that hold such pivots.
+    """
+    below = _pivots_below(gram)
+    if below is not None and below.size == known.shape[1]:
+        return known
+    _, piece = connected_components(gram, directed=False)
+    inside = np.ones(gram.shape[0], dtype=bool) if below is None else np.isin(piece, piece[below])
+    soft = np.flatnonzero(inside)
+    number = soft.size - exact_rank(model, coordinates, columns=set(soft.tolist()))
     if number == known.shape[1]:
         return known
-    basis: Array = np.linalg.eigh(gram)[1][:, :number]
+    basis = np.zeros((gram.shape[0], number))
+    basis[soft] = _softest(sp.csc_array(gram[soft][:, soft]), number)
     return basis
 
 
-def _normalised_gram(rows: sp.csr_array) -> Array:
-    size = np.sqrt(np.asarray((rows * rows).sum(axis=1)).ravel())
-    scaled = sp.diags_array(1 / np.where(size > 0, size, 1.0)) @ rows
-    gram: Array = (scaled.T @ scaled).toarray()
-    return gram
+def _pivots_below(gram: sp.csc_array) -> npt.NDArray[np.intp] | None:
+    """Return the coordinates at which the pivots of gram - floor are negative; None if rows were swapped.
+
+    Their number is that of the eigenvalues below the floor (Sylvester's law of inertia).
+    """
+    shifted = sp.csc_array(gram - LARGE_FLOOR * sp.eye_array(gram.shape[0]))
+    options = {"SymmetricMode": True}
+    try:
+        lu = splu(shifted, permc_spec="MMD_AT_PLUS_A", diag_pivot_thresh=0.0, options=options)
+    except RuntimeError:  # a pivot is exactly zero
+        return None
+    if not np.array_equal(lu.perm_r, lu.perm_c):
+        return None
+    return np.flatnonzero(lu.U.diagonal()[lu.perm_c] < 0)
 
 
 def _is_definite(matrix: Array) -> bool:
@@ -136,11 +186,15 @@ def is_spring(_link: Link, term: Stretch) -> bool:
 
 
 def exact_rank(
-    model: Model, coordinates: Coordinates, wanted: Callable[[Link, Stretch], bool] = is_spring
+    model: Model,
+    coordinates: Coordinates,
+    wanted: Callable[[Link, Stretch], bool] = is_spring,
+    columns: AbstractSet[int] | None = None,
 ) -> int:
     """Return the rank of the rows of the terms wanted, of stiffness unless asked otherwise.
 
     From the numbers as typed, over a large prime field; directions left out of the coordinates included.
+    With ``columns`` only rows that touch one of these coordinates count.
     """
     exact = places(model, exact=True)
     basis = _exact_columns(coordinates, model)
@@ -148,7 +202,9 @@ def exact_rank(
     for link in model.links:
         for term in stretches(link, exact):
             if wanted(link, term):
-                _insert(_modular(term.form, basis), solved)
+                row = _modular(term.form, basis)
+                if columns is None or not columns.isdisjoint(row):
+                    _insert(row, solved)
     return len(solved)
 
 

@@ -1,5 +1,7 @@
 """Motions that stretch nothing: their number is exact, and gear loops that cannot turn are refused."""
 
+import json
+
 import numpy as np
 import pytest
 from assembly_models import body, joined, model, mount, rotor, spring
@@ -8,6 +10,7 @@ from modalview.assembly.assemble import assemble
 from modalview.assembly.locks import speed_ratios
 from modalview.assembly.rigid import exact_rank
 from modalview.errors import ModelFaultsError
+from modalview.store import parse_model
 
 PLACES = [(0.1, 0.3, 0.7), (1.3, 0.7, 0.2), (2.9, 0.1, 1.1), (0.4, 3.3, 0.6)]
 
@@ -251,3 +254,32 @@ class TestGears:
         against = joined("gear", "v", "a", "b", ratio=-3, axis=[-2, 0, 0])
         with pytest.raises(ModelFaultsError, match="check the teeth or ratios of w0, v"):
             assemble(model("space", wheels, [*held, one, against]))
+
+
+@pytest.mark.parametrize(("lone", "free"), [(False, 0), (True, 2)])
+def test_a_mechanism_is_found_in_a_large_model_too(lone, free):
+    """560 bodies in a row (1,680 freedoms), and beside them one on a single spring: free across it and to turn."""
+    bodies = [
+        {"id": f"b{i}", "mass": "10 kg", "inertia": "1 kg m2", "position": [f"{i} m", "1 m"]}
+        for i in range(560)
+    ]
+    stiffness = {"x": "1e6 N/m", "y": "1e6 N/m", "rz": "1e5 N m/rad"}
+    links = [
+        {
+            "id": f"k{i}",
+            "kind": "mount",
+            "from": {"body": f"b{i}"},
+            "to": {"body": f"b{i + 1}"} if i < 559 else {"support": "end"},
+            "stiffness": stiffness,
+        }
+        for i in range(560)
+    ]
+    if lone:
+        bodies.append({"id": "lone", "mass": "10 kg", "inertia": "1 kg m2", "position": ["0 m", "3 m"]})
+        spring = {"from": {"body": "lone"}, "to": {"support": "foot"}, "stiffness": "1e5 N/m"}
+        links.append({"id": "single", "kind": "spring", **spring})
+    supports = [{"id": "end", "position": ["560 m", "1 m"]}, {"id": "foot", "position": ["0 m", "0 m"]}]
+    document = {"format": "keepclear", "version": 1, "motion": "plane", "bodies": bodies, "links": links}
+    structure = assemble(parse_model(json.dumps({**document, "supports": supports}))).structure
+    assert structure.rigid_body.shape[1] == free
+    assert np.abs(structure.stiffness.rows @ structure.rigid_body).max(initial=0.0) < 1e-7
