@@ -258,7 +258,7 @@ class TestGears:
 
 @pytest.mark.parametrize(("lone", "free"), [(False, 0), (True, 2)])
 def test_a_mechanism_is_found_in_a_large_model_too(lone, free):
-    """560 bodies in a row (1,680 freedoms), and beside them one on a single spring: free across it and to turn."""
+    """560 bodies in a row, and beside them one on a single spring: free across it and to turn."""
     bodies = [
         {"id": f"b{i}", "mass": "10 kg", "inertia": "1 kg m2", "position": [f"{i} m", "1 m"]}
         for i in range(560)
