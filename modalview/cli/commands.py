@@ -15,7 +15,7 @@ from modalview.study import Request, Solution, look, solve
 from modalview.study.damped import damped
 
 Prepare = Callable[[argparse.ArgumentParser], None]
-PICTURES = ("sheet", "scale", "mode")
+PICTURES = ("sheet", "scale", "mode", "plane")
 
 
 def _file(words: argparse.Namespace) -> tuple[Path, Model]:
@@ -108,7 +108,7 @@ def _prepare_picture(parser: argparse.ArgumentParser) -> None:
 
 
 def run_picture(words: argparse.Namespace) -> int:
-    """Write a picture of the sheet, a mode or the scale, without a screen."""
+    """Write a picture of the sheet, a mode, the scale or the complex plane, without a screen."""
     from modalview.cli.pictures import write_picture  # noqa: PLC0415  (Qt is loaded only for a picture)
 
     _, model = _file(words)
@@ -122,5 +122,5 @@ COMMANDS: dict[str, tuple[str, Prepare]] = {
     "modes": ("find the modes, with their range over all tolerances", _prepare_modes),
     "check": ("prove whether any speed or order meets a mode, over all tolerances", _prepare_check),
     "import": ("make a model file of a table of nodes and a table of springs", imports.prepare),
-    "picture": ("draw the sheet, a mode or the frequency scale, without a screen", _prepare_picture),
+    "picture": ("draw the sheet, a mode, the scale or the complex plane, without a screen", _prepare_picture),
 }

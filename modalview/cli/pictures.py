@@ -3,6 +3,8 @@
 import argparse
 import re
 
+from modalview.drawing.complexplane import plane_drawing
+from modalview.drawing.complexplanecontent import plane_content
 from modalview.drawing.furniture import title_lines
 from modalview.drawing.motion import moved
 from modalview.drawing.palette import DARK, LIGHT
@@ -14,6 +16,7 @@ from modalview.drawing.sheet import sheet_drawing, sheet_geometry
 from modalview.errors import UsageError
 from modalview.model.parts import Model
 from modalview.study import Request, solve
+from modalview.study.damped import damped
 
 LEAST, MOST = 400, 8000
 # Pixels of the file per unit of the drawing: letters of 12 units are sharp in print.
@@ -53,6 +56,9 @@ def _drawing(model: Model, words: argparse.Namespace, width: int, height: int) -
     if words.of == "sheet":
         return sheet_drawing(sheet_geometry(model, width, height), title_lines(model))
     solution = solve(Request(model))
+    if words.of == "plane":
+        damping = damped(Request(model), solution)
+        return plane_drawing(plane_content(solution.outlook, solution, damping), width, height)
     if words.of == "scale":
         return scale_drawing(scale_content(solution.outlook, solution), width, height).drawing
     number = 1 if words.mode is None else words.mode
