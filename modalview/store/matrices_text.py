@@ -172,7 +172,8 @@ def _refuse_value(value: float, place: str) -> NoReturn:
 
 def _refuse_number(found: int, header: Header, name: str) -> NoReturn:
     how = "is cut off" if found < header.entries else "goes on"
-    reason = f"announces {header.entries} entries and holds {found}: the file {how}"
+    noun = "entry" if header.entries == 1 else "entries"
+    reason = f"announces {header.entries} {noun} and holds {found}: the file {how}"
     raise FileFaultsError((Fault(f"{name}, line {header.line}", reason),))
 
 

@@ -109,7 +109,7 @@ def _without_unit(table: Table, role: Role, quantity: Quantity, column: Column) 
     heading = table.headings[column.index]
     if column.unit:
         what = f'"{column.unit}" is no unit of {quantity.name}'
-    elif all(_has_unit(cells[column.index]) for _, cells in table.rows):
+    elif all(_needs_none(cells[column.index]) for _, cells in table.rows):
         return []
     else:
         what = f"has no unit: write it in the heading, such as {role.headings[0]}_{quantity.si_unit}, or give"
@@ -117,9 +117,10 @@ def _without_unit(table: Table, role: Role, quantity: Quantity, column: Column) 
     return [Fault(f'{table.name}, column "{heading}"', what)]
 
 
-def _has_unit(cell: str) -> bool:
+def _needs_none(cell: str) -> bool:
+    """Tell whether a cell names its own unit, or holds no number."""
     parts = split_number(cell)
-    return parts is not None and bool(parts[1].strip())
+    return parts is None or bool(parts[1].strip())
 
 
 def _matches(heading: str, role: Role) -> list[tuple[int, str]]:

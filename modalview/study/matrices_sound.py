@@ -15,8 +15,8 @@ from modalview.factor.shifted import ShiftedPencil, shifted_pencil
 
 # A mass matrix is factored in dense blocks of coordinates it couples; one of this size takes 0.3 GB.
 LARGEST_BLOCK = 6000
-# The lowest eigenvalue is told to this share of itself: a measure, for a message.
-MEASURE = 0.01
+# The lowest eigenvalue is bracketed to this share of itself: a measure, for a message.
+MEASURE = 1e-3
 STEPS = 24
 
 
@@ -31,7 +31,7 @@ class Signs:
     zero : int or None
         Not to be told from zero.
     lowest : float
-        The lowest as a share of ``top``, to 1 per cent; 0 where none is proven below zero.
+        The lowest as a share of ``top``, to three digits; 0 where none is proven below zero.
     top : float
         Bound of the largest in size.
     """
@@ -47,7 +47,7 @@ def signs_of(shifted: ShiftedPencil) -> Signs:
 
     Notes
     -----
-    Cost: two factorizations; about twelve more where some are negative. Sylvester's law of inertia makes
+    Cost: two factorizations; about fifteen more where some are negative. Sylvester's law of inertia makes
     the numbers those of K itself, whatever the positive definite M.
     """
     top = shifted.extents.top
@@ -63,7 +63,7 @@ def signs_of(shifted: ShiftedPencil) -> Signs:
             near = middle
         else:
             far = middle
-    return Signs(found.below, found.number, -near / top, top)
+    return Signs(found.below, found.number, -float(np.sqrt(near * far)) / top, top)
 
 
 def require_mass(M: sp.csc_array, name: str) -> None:

@@ -65,6 +65,13 @@ def read(name: str) -> OpenSet:
     )
 
 
+def files(name: str) -> tuple[Path, Path | None]:
+    """Return the files of K and M; None for a unit mass."""
+    root = HERE if (HERE / name).is_dir() else BESIDE
+    entry = json.loads((root / "reference.json").read_text(encoding="utf-8"))[name]["files"]
+    return root / entry["K"], None if entry["M"] == "identity" else root / entry["M"]
+
+
 def matrix(path: Path) -> sp.csc_array:
     """Read a Matrix Market file, gzipped or not, with both triangles."""
     return sp.csc_array(sp.coo_array(scipy.io.mmread(path, spmatrix=False)).astype(float))
