@@ -5,7 +5,7 @@ from dataclasses import dataclass, field
 from fractions import Fraction
 
 from modalview.assembly.kinematics import ROTATIONS, Vector, cross, places
-from modalview.assembly.stretch import gear_ratio, rotation_axis
+from modalview.assembly.stretch import exact_ratio, rotation_axis
 from modalview.errors import Fault, ModelFaultsError
 from modalview.model.parts import Gear, Link, Model, Motion, RigidLink, Shaft
 
@@ -97,7 +97,7 @@ class _Trains:
             a, b = link.from_.body, link.to.body
             if a is not None and b is not None:
                 gear = link if isinstance(link, Gear) else None
-                ratio = gear_ratio(gear) if gear else Fraction(1)
+                ratio = exact_ratio(gear) if gear else Fraction(1)
                 steps[a].append((b, ratio, gear))
                 steps[b].append((a, 1 / ratio, gear))
         return steps

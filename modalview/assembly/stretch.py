@@ -23,6 +23,8 @@ from modalview.assembly.kinematics import (
     midpoint,
     minus,
 )
+from modalview.errors import Fault, ModelFaultsError
+from modalview.model.gears import gear_ratio
 from modalview.model.parts import (
     FREEDOMS,
     Beam,
@@ -155,15 +157,16 @@ def _shaft(link: Shaft, places: Places) -> Iterator[Stretch]:
     yield Stretch("stiffness", relative_turn(link, places, axis), axis, ("stiffness",))
 
 
-def gear_ratio(link: Gear) -> Fraction:
+def exact_ratio(link: Gear) -> Fraction:
     """Return the rotation of ``to`` over that of ``from``, exactly as typed; -from/to for teeth."""
-    if link.teeth is not None:
-        return Fraction(-link.teeth[0], link.teeth[1])
-    return Fraction(str(link.ratio))
+    ratio = gear_ratio(link)
+    if ratio is None:
+        raise ModelFaultsError((Fault(f'gear "{link.id}"', "its ratio or its teeth cannot be read"),))
+    return ratio
 
 
 def _ratio(link: Gear, places: Places) -> Number:
-    return gear_ratio(link) if places.exact else float(gear_ratio(link))
+    return exact_ratio(link) if places.exact else float(exact_ratio(link))
 
 
 def _gear(link: Gear, places: Places) -> Iterator[Stretch]:

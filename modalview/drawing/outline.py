@@ -7,6 +7,7 @@ import numpy as np
 from modalview.drawing.layout import Layout
 from modalview.drawing.primitives import Floats
 from modalview.drawing.view import View
+from modalview.model.gears import gear_ratio
 from modalview.model.parts import Body, Gear, InertiaTensor, Model, Motion
 
 # Sizes in pixels of a body that nothing else gives a size.
@@ -178,21 +179,6 @@ def _inertia(body: Body) -> float:
     return body.inertia.si
 
 
-def gear_ratio(gear: Gear) -> float:
-    """Return the rotation of ``to`` over that of ``from``.
-
-    >>> from modalview.model.parts import End
-    >>> gear_ratio(Gear(id="g", from_=End(body="a"), to=End(body="b"), teeth=(42, 10)))
-    -4.2
-    """
-    if gear.teeth is not None:
-        return -gear.teeth[0] / gear.teeth[1]
-    if isinstance(gear.ratio, str):
-        over, _, under = gear.ratio.partition("/")
-        return float(over) / float(under or 1)
-    return gear.ratio if gear.ratio is not None else -1.0
-
-
 def _mesh(model: Model, places: Layout, half: Floats) -> None:
     """Share the distance of two gears' axes between their radii by the ratio."""
     for number, link in enumerate(model.links):
@@ -200,6 +186,6 @@ def _mesh(model: Model, places: Layout, half: Floats) -> None:
         if not isinstance(link, Gear) or min(one, other) < 0:
             continue
         distance = abs(places.centres[one, 1] - places.centres[other, 1])
-        share = abs(gear_ratio(link))
+        share = abs(float(gear_ratio(link) or 1))
         half[one, 1] = distance * share / (1 + share)
         half[other, 1] = distance / (1 + share)

@@ -1,12 +1,11 @@
 """Rules of links: ends, kinds that make sense in a motion, and what each kind needs."""
 
 from collections.abc import Callable
-from fractions import Fraction
-from re import fullmatch
 from typing import Any
 
 from modalview.errors import UnitError
 from modalview.model.fields import fields_of
+from modalview.model.gears import gear_ratio
 from modalview.model.parts import (
     Beam,
     Damper,
@@ -51,8 +50,6 @@ KINDS: dict[Motion, tuple[type[Link], ...]] = {
     Motion.PLANE: (Spring, Damper, Mount, Shaft, Gear, Beam, RigidLink),
     Motion.SPACE: (Spring, Damper, Mount, Shaft, Gear, Beam, RigidLink),
 }
-
-MOST_TEETH = 1_000_000
 # Pitch radii are rounded when typed; a ratio further off than this share does not belong to them.
 PITCH_MISMATCH = 0.01
 # A beam's y axis nearer to its own line than this (1 - cosine) leaves its section unturned.
@@ -145,28 +142,6 @@ def _mount(given: Mount, context: Context) -> Findings:
 def _shaft(given: Shaft, context: Context) -> Findings:
     yield from positive_value("stiffness", given.stiffness)
     yield from space_axis("axis", given.axis, context)
-
-
-def gear_ratio(given: Gear) -> Fraction | None:
-    """Return the rotation of ``to`` over that of ``from``, or None when it is not told rightly.
-
-    >>> from modalview.model.parts import End
-    >>> gear_ratio(Gear(id="g", from_=End(body="a"), to=End(body="b"), teeth=(84, 20)))
-    Fraction(-21, 5)
-    """
-    if given.teeth is not None:
-        start, stop = given.teeth
-        usable = 0 < abs(start) <= MOST_TEETH and 0 < abs(stop) <= MOST_TEETH and (start > 0 or stop > 0)
-        return -Fraction(start, stop) if usable else None
-    if isinstance(given.ratio, str):
-        plain = fullmatch(
-            r"([+-]?\d{1,9})(?:/(\d{1,9}))?", given.ratio.replace("\u2212", "-").replace(" ", "")
-        )
-        below = int(plain[2] or 1) if plain else 0
-        return Fraction(int(plain[1]), below) or None if plain and below else None
-    if given.ratio is None or not 1e-9 < abs(given.ratio) < 1e9:
-        return None
-    return Fraction(str(given.ratio))  # as typed: 4.2 is 21/5, not the nearest binary number
 
 
 def _gear(given: Gear, context: Context) -> Findings:

@@ -6,6 +6,7 @@ from fractions import Fraction
 
 import pytest
 
+from modalview.model.gears import gear_ratio
 from modalview.model.parts import (
     Axes,
     Beam,
@@ -24,7 +25,7 @@ from modalview.model.parts import (
 )
 from modalview.model.rules import faults
 from modalview.model.rules_context import Context
-from modalview.model.rules_links import gear_ratio, link, varied_quantity
+from modalview.model.rules_links import link, varied_quantity
 from modalview.model.rules_records import changed_address
 from modalview.model.values import Entry, Tolerance, Value
 from modalview.units import quantities as q
