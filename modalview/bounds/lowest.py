@@ -191,6 +191,8 @@ def _energy(pencil: Pencil, forms: Forms, shape: Array) -> float:
 def _proven(shifted: ShiftedPencil, proposals: list[float], rigid: int) -> float:
     for sigma in proposals:
         found = shifted.factorize(sigma)
+        if found.uncertainty >= sigma and shifted.relative is not None:
+            found = shifted.relative.factorize(sigma)
         if found.negative <= rigid and found.uncertainty < sigma:
             return float(np.nextafter(sigma - found.uncertainty, 0.0))
     return 0.0

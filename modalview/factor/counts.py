@@ -1,10 +1,12 @@
 """Numbers of eigenvalues below a value: one-sided, or undecided, never wrong."""
 
+from collections.abc import Callable
 from dataclasses import dataclass
 
 import numpy as np
 
-from modalview.factor.shifted import Inertia, ShiftedPencil
+from modalview.factor.inertia import Inertia
+from modalview.factor.shifted import ShiftedPencil
 
 # An edge may move outward by this share of itself, its uncertainty included; beyond, the count is undecided.
 LARGEST_SHARE = 1e-6
@@ -150,44 +152,67 @@ def count_zero(shifted: ShiftedPencil) -> ZeroModes:
 def _outward(shifted: ShiftedPencil, lam: float, side: float) -> Inertia | str:
     """Factor at an edge beyond lam on one side that proves its count, or say why none does.
 
-    The first edge is a guess, the second follows from the uncertainty seen there, then come the nudges.
+    First in the coordinates as they are, then, where there are terms, in those relative over stiff ones,
+    then by dense pivots.
     """
     allowed = LARGEST_SHARE * abs(lam) if lam else LARGEST_SHARE_OF_TOP * shifted.extents.top
     least = shifted.least_uncertainty(lam)
-    if not least < allowed:
+    sought = _Sought(lam, side, allowed)
+    found = sought.sparse(shifted.factorize) if least < allowed else None
+    if found is not None and sought.proven_by(found):
+        return found
+    if shifted.relative is not None:
+        relative = sought.sparse(shifted.relative.factorize)
+        if sought.proven_by(relative):
+            return relative
+    if found is None:
         return _too_stiff(least, lam)
-    unit = NUDGE / LARGEST_SHARE * allowed
-    distance = FIRST_SHARE / LARGEST_SHARE * allowed
-    nudged = 0
-    for _ in range(TRIES):
-        sigma = _displaced(lam, side, distance)
-        found = shifted.factorize(sigma)
-        if _proves(found, lam, side, allowed):
-            return found
-        if distance < STAND_OFF * found.uncertainty <= allowed / 2:
-            distance = STAND_OFF * found.uncertainty
-        elif nudged < NUDGES:
-            nudged += 1
-            distance = nudged * unit
-        else:
-            break
     if shifted.n <= DENSE_LIMIT:
-        dense = shifted.factorize_dense(sigma)
-        if _proves(dense, lam, side, allowed):
+        dense = shifted.factorize_dense(found.sigma)
+        if sought.proven_by(dense):
             return dense
     return _too_stiff(found.uncertainty, lam)
+
+
+@dataclass(frozen=True, slots=True)
+class _Sought:
+    """A count on one side of lam, at an edge moved outward by no more than what is allowed."""
+
+    lam: float
+    side: float
+    allowed: float
+
+    def sparse(self, factorize: Callable[[float], Inertia]) -> Inertia:
+        """Factor at edges ever farther out until one proves its count; the last one where none does.
+
+        The first edge is a guess, the second follows from the uncertainty seen there, then come the nudges.
+        """
+        unit = NUDGE / LARGEST_SHARE * self.allowed
+        distance = FIRST_SHARE / LARGEST_SHARE * self.allowed
+        nudged = 0
+        for _ in range(TRIES):
+            found = factorize(_displaced(self.lam, self.side, distance))
+            if self.proven_by(found):
+                break
+            if distance < STAND_OFF * found.uncertainty <= self.allowed / 2:
+                distance = STAND_OFF * found.uncertainty
+            elif nudged < NUDGES:
+                nudged += 1
+                distance = nudged * unit
+            else:
+                break
+        return found
+
+    def proven_by(self, found: Inertia) -> bool:
+        """Whether everything on this side of lam is counted, and nothing beyond what is allowed."""
+        clearance = self.side * (found.sigma - self.lam)
+        return found.uncertainty < clearance and clearance + found.uncertainty <= self.allowed
 
 
 def _displaced(lam: float, side: float, distance: float) -> float:
     """Lam moved outward by at least one unit in the last place."""
     moved = lam + side * distance
     return float(moved if moved != lam else np.nextafter(lam, side * np.inf))
-
-
-def _proves(found: Inertia, lam: float, side: float, allowed: float) -> bool:
-    """Whether everything on this side of lam is counted, and nothing beyond what is allowed."""
-    clearance = side * (found.sigma - lam)
-    return found.uncertainty < clearance and clearance + found.uncertainty <= allowed
 
 
 def _too_stiff(uncertainty: float, lam: float) -> str:

@@ -27,6 +27,10 @@ class PencilParts:
         Known number of motions that stretch nothing.
     definite : bool
         K is a sum of positive terms, so no eigenvalue is negative.
+    rows, stiffness : csr_array (t, n), array (t,); or None
+        The terms of K, where they are known.
+    scale : array (n,) or None
+        Metres per unit of each coordinate; None is 1.
     """
 
     K: sp.csc_array
@@ -37,3 +41,6 @@ class PencilParts:
     terms: int = 0
     rigid_modes: int = 0
     definite: bool = False
+    rows: sp.csr_array | None = None
+    stiffness: npt.NDArray[np.float64] | None = None
+    scale: npt.NDArray[np.float64] | None = None

@@ -1,7 +1,6 @@
 """K - sigma M factored on one fixed pattern, with a proven uncertainty of what its pivots count."""
 
 from dataclasses import dataclass
-from typing import TYPE_CHECKING
 
 import numpy as np
 import numpy.typing as npt
@@ -10,12 +9,11 @@ import scipy.sparse as sp
 from modalview.errors import NumericalError
 from modalview.factor.dense import dense_inertia
 from modalview.factor.held import held_margin
+from modalview.factor.inertia import Inertia
 from modalview.factor.parts import PencilParts
 from modalview.factor.pattern import Pattern, union_pattern
+from modalview.factor.relative import Relative
 from modalview.factor.uncertainty import Extents, extents_of, factor_rounding
-
-if TYPE_CHECKING:
-    from scipy.sparse.linalg import SuperLU
 
 Array = npt.NDArray[np.float64]
 
@@ -24,32 +22,6 @@ REFINED_SHARE = 1e-9
 
 # Margins asked of a large massless block, in turn.
 MARGINS = (1e-2, 1e-4, 1e-6, 1e-8)
-
-
-@dataclass(frozen=True, slots=True, eq=False)
-class Inertia:
-    """What one factorization proves.
-
-    Parameters
-    ----------
-    sigma : float
-        Shift, rad**2/s**2.
-    negative : int
-        Negative pivots.
-    uncertainty : float
-        delta, rad**2/s**2: ``negative`` is at least the number of eigenvalues below sigma - delta and at
-        most the number below sigma + delta. Infinite where nothing is proven.
-    method : str
-        "sparse LDL^T" or "dense Bunch-Kaufman".
-    lu : SuperLU or None
-        The sparse factors, in the stored order; there also where pivoting made the count worthless.
-    """
-
-    sigma: float
-    negative: int
-    uncertainty: float
-    method: str
-    lu: "SuperLU[np.float64] | None" = None
 
 
 @dataclass(frozen=True, slots=True, eq=False)
@@ -68,6 +40,8 @@ class ShiftedPencil:
         Known number of motions that stretch nothing.
     definite : bool
         Whether K is known to have no negative eigenvalue (a sum of positive terms).
+    relative : Relative or None
+        The same in coordinates relative over stiff terms, where there are terms.
     """
 
     pattern: Pattern
@@ -76,6 +50,7 @@ class ShiftedPencil:
     extents: Extents
     rigid_modes: int
     definite: bool
+    relative: Relative | None = None
 
     @property
     def n(self) -> int:
@@ -191,7 +166,15 @@ def shifted_pencil(parts: PencilParts, pattern: Pattern | None = None) -> Shifte
         extents=extents_of(parts, pattern, margin),
         rigid_modes=parts.rigid_modes,
         definite=parts.definite,
+        relative=_relative(parts),
     )
+
+
+def _relative(parts: PencilParts) -> Relative | None:
+    if parts.rows is None or parts.stiffness is None:
+        return None
+    scale = np.ones(parts.K.shape[0]) if parts.scale is None else parts.scale
+    return Relative(parts.rows, parts.stiffness, parts.M, scale)
 
 
 def _lowest(matrix: sp.csc_array) -> float:

@@ -6,7 +6,7 @@ import numpy as np
 import pytest
 import scipy.sparse as sp
 
-from modalview.assembly.pencil import pencil_of_terms
+from modalview.assembly.pencil import pencil_of_matrices, pencil_of_terms
 from modalview.bounds.bands import Cases, count_band
 
 ROWS = sp.csr_array(np.array([[1.0, 0.0], [-1.0, 1.0], [0.0, 1.0]]))
@@ -99,7 +99,8 @@ def test_rigid_body_modes_lie_in_no_band():
 
 def test_what_rounding_leaves_open_is_named():
     rows = sp.csr_array(np.array([[1.0, 0, 0], [-1, 1, 0], [0, -1, 1]]))
-    stiff = pencil_of_terms(rows, np.array([1.0, 1e13, 1e13]), np.ones(3)).shifted
+    stiffness = np.diag([1.0, 1e13, 1e13])
+    stiff = pencil_of_matrices(sp.csc_array(rows.T @ stiffness @ rows), sp.csc_array(np.eye(3))).shifted
     counted = count_band(Cases(stiff, stiff, stiff), (0.5, 0.6))
     assert counted.inside is None
     assert counted.possible is None

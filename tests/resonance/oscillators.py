@@ -57,3 +57,27 @@ def looked(given):
 
 def solved(given):
     return solve(Request(model_of(given)))
+
+
+def nearly_parallel(machine_speed):
+    """1 kg on two springs at an angle of 5e-8 to each other: 8e14 N/m along them, 1 N/m across (1 rad/s)."""
+    far = {"s": ["1 m", "1 m"], "r": ["1 m", "1.0000001 m"]}
+    return {
+        "format": "keepclear",
+        "version": 1,
+        "title": "nearly parallel",
+        "motion": "plane",
+        "bodies": [{"id": "b", "mass": "1 kg", "dof": ["x", "y"], "position": ["0 m", "0 m"]}],
+        "supports": [{"id": name, "position": place} for name, place in far.items()],
+        "links": [
+            {
+                "id": f"k{name}",
+                "kind": "spring",
+                "from": {"body": "b"},
+                "to": {"support": name},
+                "stiffness": "8e14 N/m",
+            }
+            for name in far
+        ],
+        "machines": [machine(machine_speed, "10 %")],
+    }
