@@ -18,8 +18,8 @@ ComplexArray = npt.NDArray[np.complex128]
 
 # Two real roots whose shapes differ by less than this (one minus the squared cosine) are one overdamped mode.
 SAME_SHAPE = 1e-9
-# A condition beyond this leaves less than half of the digits.
-NEARLY_CRITICAL = 1e8
+# A condition beyond this leaves less than nine digits; at critical damping it is 1e8, and eight are left.
+NEARLY_CRITICAL = 1e7
 # A two-sided quotient is taken where its denominator is above this share of ||x||^2: below, it is no better
 # than the root it starts from.
 SOUND = 1e-6
@@ -260,7 +260,7 @@ def _warnings(
     critical = int(np.sum(found.condition > NEARLY_CRITICAL))
     if critical:
         said.append(
-            f"{critical} roots are nearly critically damped: two roots almost coincide, and half of the "
-            "digits are lost there."
+            f"{critical} of the roots nearly coincide with another (critical damping): about half of their "
+            "digits are lost, and whether they oscillate is not certain."
         )
     return tuple(said)

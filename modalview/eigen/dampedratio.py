@@ -87,4 +87,4 @@ def real_pair_ratio(slow: float, fast: float) -> float:
     >>> real_pair_ratio(1.0, 4.0)
     1.25
     """
-    return (slow + fast) / (2 * math.sqrt(slow) * math.sqrt(fast))
+    return (math.sqrt(slow / fast) + math.sqrt(fast / slow)) / 2
