@@ -5,12 +5,13 @@ from dataclasses import dataclass
 import numpy as np
 
 from modalview.assembly.pencil import Pencil
-from modalview.bounds.discs import Discs, discs_of
+from modalview.bounds.discs import Discs, Group, discs_of
 from modalview.bounds.forms import forms_of
 from modalview.bounds.highest import highest_bounds
 from modalview.bounds.lowest import lowest_bounds
 from modalview.bounds.norms import Norms, norms_of
 from modalview.bounds.rigid import rigid_body
+from modalview.bounds.separated import separated_groups
 from modalview.factor.rounding import gamma
 
 
@@ -29,6 +30,8 @@ class Bounds:
         None when rounding leaves it undecided (matrices of others only).
     rows, columns, symmetric : Discs or None
         None for a full M of others.
+    separated : tuple of Group
+        Groups of the discs of S that scalings of their own set apart; empty where none does.
     norms : Norms
         rad**2/s**2.
     notes : tuple of str
@@ -41,6 +44,7 @@ class Bounds:
     rows: Discs | None
     columns: Discs | None
     symmetric: Discs | None
+    separated: tuple[Group, ...]
     norms: Norms
     notes: tuple[str, ...]
 
@@ -68,8 +72,9 @@ def before_solve(pencil: Pencil) -> Bounds:
     notes: list[str] = []
     if discs is None:
         notes.append("No discs: the mass matrix couples its coordinates; counts give the bounds.")
-    elif symmetric is not None and len(symmetric.groups) == 1 and pencil.modes > 1:
-        notes.append("The discs of S all overlap, so they separate no group of modes.")
+    separated = separated_groups(forms) if discs else ()
+    if discs is not None and pencil.modes > 1 and not separated:
+        notes.append("The discs of S overlap under every scaling tried, so they separate no group of modes.")
     lowest = None
     if rigid.number is None or rigid.negative is None:
         notes.append("Rounding leaves the number of zero modes undecided.")
@@ -91,6 +96,7 @@ def before_solve(pencil: Pencil) -> Bounds:
         rows=rows,
         columns=columns,
         symmetric=symmetric,
+        separated=separated,
         norms=norms_of(forms, discs),
         notes=tuple(notes),
     )

@@ -7,7 +7,7 @@ from typing import Any
 
 import numpy as np
 
-from modalview.bounds.discs import Discs
+from modalview.bounds.discs import Discs, Group
 from modalview.eigen.modes import Modes
 from modalview.resonance.results import Check
 from modalview.study import FoundMode, MatrixOutlook, MatrixSolution, Outlook, Share, Solution
@@ -26,12 +26,10 @@ def bounds_document(path: Path, outlook: Outlook | MatrixOutlook) -> dict[str, A
         "rigid_body_modes": bounds.rigid_body_modes,
         "bands": [_band_document(check) for check in outlook.checks],
         "gershgorin": {
-            name: _discs(discs)
-            for name, discs in (
-                ("rows", bounds.rows),
-                ("columns", bounds.columns),
-                ("symmetric", bounds.symmetric),
-            )
+            "rows": _discs(bounds.rows),
+            "columns": _discs(bounds.columns),
+            "symmetric": _discs(bounds.symmetric),
+            "separated": _groups(bounds.separated),
         },
         "norms_rad2_per_s2": {
             "one": bounds.norms.one,
@@ -61,11 +59,15 @@ def _discs(discs: Discs | None) -> dict[str, Any] | None:
     return {
         "low_rad2_per_s2": (discs.centres - discs.radii).tolist(),
         "high_rad2_per_s2": (discs.centres + discs.radii).tolist(),
-        "groups": [
-            {"low_rad2_per_s2": group.low, "high_rad2_per_s2": group.high, "modes": group.number}
-            for group in discs.groups
-        ],
+        "groups": _groups(discs.groups),
     }
+
+
+def _groups(groups: Sequence[Group]) -> list[dict[str, Any]]:
+    return [
+        {"low_rad2_per_s2": group.low, "high_rad2_per_s2": group.high, "modes": group.number}
+        for group in groups
+    ]
 
 
 def modes_document(path: Path, solution: Solution) -> dict[str, Any]:

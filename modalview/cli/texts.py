@@ -5,6 +5,8 @@ from decimal import ROUND_CEILING, ROUND_FLOOR, Context, Decimal
 from pathlib import Path
 from textwrap import fill
 
+from modalview.bounds.before import to_hz
+from modalview.bounds.discs import Group
 from modalview.cli.cautions import CAUTION
 from modalview.cli.table import table
 from modalview.resonance.results import Check, Drive
@@ -38,8 +40,21 @@ def bounds_text(outlook: Outlook | MatrixOutlook) -> str:
             for c in outlook.checks
         ]
         parts.append(table([head, *rows], right=frozenset({2, 3, 4})))
+    parts += [_separated(bounds.separated)] if bounds.separated else []
     parts += [_wrapped(outlook.sentence), _lines(bounds.notes)]
     return "\n\n".join(parts + _tail(outlook))
+
+
+def _separated(groups: Sequence[Group]) -> str:
+    """Return the groups of modes that discs prove, in Hz, rounded outward."""
+    rows = [
+        [
+            f"{group.number} mode{'s' if group.number > 1 else ''}",
+            _span((to_hz(group.low, up=False), to_hz(group.high, up=True))),
+        ]
+        for group in groups
+    ]
+    return "Modes that scaled Gershgorin discs keep apart:\n" + table(rows, right=frozenset({0}))
 
 
 def modes_text(solution: Solution | MatrixSolution, more: str = "") -> str:

@@ -81,6 +81,8 @@ def test_bounds(capsys, path):
     for band in told["bands"]:
         assert set(band) >= BAND
         assert band["from_hz"] < band["to_hz"]
+    separated = told["gershgorin"].pop("separated")
+    assert all(set(group) == GROUP for group in separated)
     for discs in told["gershgorin"].values():
         assert set(discs) == DISCS
         assert all(set(group) == GROUP for group in discs["groups"])
