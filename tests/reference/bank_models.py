@@ -47,6 +47,10 @@ def _line(model: Tree) -> tuple[str, list[Tree], list[Tree], list[Tree]]:
         {"id": one["id"], "kind": "spring", **_ends(one), "stiffness": f"{one['stiffness_N_per_m']!r} N/m"}
         for one in model["springs"]
     ]
+    links += [
+        {"id": one["id"], "kind": "damper", **_ends(one), "damping": f"{one['damping_Ns_per_m']!r} N s/m"}
+        for one in model.get("dashpots", [])
+    ]
     return "single axis", bodies, links, [{"id": "ground"}]
 
 
