@@ -22,7 +22,7 @@ def mode_geometry(model: Model, width: float, height: float) -> SheetGeometry:
     return bare_geometry(model, (width, height), area, None, grow)
 
 
-def mode_picture(geometry: SheetGeometry, posed: Pose, factor: float) -> Drawing:
-    """Return the model at ``factor`` (-1..1) times the amplitude, over its ghost at rest."""
+def mode_picture(geometry: SheetGeometry, posed: Pose, factor: complex) -> Drawing:
+    """Return the model at ``factor`` (see ``motion.frame``) times the mode, over its ghost at rest."""
     under = ground_items(geometry) + ghost_items(geometry) + axis_items(geometry) + train_items(geometry)
     return sheet_of(under + frame(geometry, posed, factor).items, geometry.width, geometry.height, 1.0)

@@ -3,6 +3,7 @@
 from dataclasses import dataclass
 
 import numpy as np
+import numpy.typing as npt
 
 from modalview.drawing.furniture import TitleLines, sheet_of
 from modalview.drawing.geometry import SheetGeometry
@@ -22,6 +23,8 @@ from modalview.drawing.primitives import Circles, Drawing, Floats, Item, Lines, 
 from modalview.drawing.symbols import arrow, turning_arrow
 from modalview.model.parts import Motion
 
+Phased = npt.NDArray[np.float64] | npt.NDArray[np.complex128]
+
 STILL = 0.02  # of the largest motion: below it a part counts as standing still
 DIAL_SWING = np.radians(55.0)  # of the largest rotation at amplitude 1
 ARROW = 40.0  # pixels of the largest motion's arrow
@@ -35,7 +38,7 @@ class Pose:
     Parameters
     ----------
     steps : array (points, 2)
-        Pixels that every point moves at amplitude 1.
+        Pixels that every point moves at amplitude 1; complex where parts move out of step.
     centre_steps : array (bodies, 2)
         The same of the centres of gravity.
     turns : array (bodies,)
@@ -44,27 +47,29 @@ class Pose:
         Largest motion of any point of the body over the largest of all, 0..1.
     """
 
-    steps: Floats
-    centre_steps: Floats
-    turns: Floats
+    steps: Phased
+    centre_steps: Phased
+    turns: Phased
     sizes: Floats
 
 
-def pose(geometry: SheetGeometry, motion: Floats) -> Pose:
+def pose(geometry: SheetGeometry, motion: Phased) -> Pose:
     """Turn a mode into pixel steps.
 
     Parameters
     ----------
     geometry : SheetGeometry
     motion : array (bodies, 6)
-        x, y, z, rx, ry, rz of every body, in the order of the model; any scale.
+        x, y, z, rx, ry, rz of every body, in the order of the model; any scale. Complex for a damped mode:
+        its real part times exp(i phase) is seen.
 
     Notes
     -----
     Displacements are linear in the amplitude, as the mode itself is: a point at arm r moves by
     u + theta x r.
     """
-    motion = np.asarray(motion, dtype=float).reshape(-1, 6)
+    kind = complex if np.iscomplexobj(motion) else float
+    motion = np.asarray(motion, dtype=kind).reshape(-1, 6)
     points, train = geometry.points, geometry.train
     count = len(geometry.centres)
     if not count:
@@ -76,7 +81,7 @@ def pose(geometry: SheetGeometry, motion: Floats) -> Pose:
     world = motion[points.bodies, :3] + np.cross(motion[points.bodies, 3:], points.arms)
     world[points.bodies == GROUND] = 0.0
     steps = geometry.view.steps(world)
-    lengths = np.hypot(steps[:, 0], steps[:, 1])
+    lengths = np.hypot(*np.abs(steps).T)
     largest = float(lengths.max(initial=0.0)) or 1.0
     sizes = np.zeros(count)
     moving = points.bodies != GROUND
@@ -87,20 +92,20 @@ def pose(geometry: SheetGeometry, motion: Floats) -> Pose:
     return Pose(steps, steps[geometry.centres], turns, sizes)
 
 
-def frame(geometry: SheetGeometry, posed: Pose, factor: float) -> Drawing:
-    """Return what moves, at ``factor`` (-1..1) times the amplitude.
+def frame(geometry: SheetGeometry, posed: Pose, factor: complex) -> Drawing:
+    """Return what moves, at ``factor`` (amplitude times exp(i phase); real: -1..1) times the mode.
 
     Only arrays are computed and no text is laid out; names inside bodies move with them.
     """
-    points = geometry.points.rest + factor * posed.steps
+    points = geometry.points.rest + np.real(factor * posed.steps)
     items = part_items(geometry, points)
     if geometry.train is not None:
         items += _twist(geometry, posed, factor)
-    items += label_items(geometry, factor * posed.centre_steps if geometry.train is None else None)
+    items += label_items(geometry, np.real(factor * posed.centre_steps) if geometry.train is None else None)
     return sheet_of(items, geometry.width, geometry.height, geometry.text_scale)
 
 
-def frozen(geometry: SheetGeometry, posed: Pose, factor: float = 1.0) -> Drawing:
+def frozen(geometry: SheetGeometry, posed: Pose, factor: complex = 1.0) -> Drawing:
     """Return a frame that tells the motion standing still: arrows, and parts that stand still marked."""
     drawing = frame(geometry, posed, factor)
     items = drawing.items + _arrows(geometry, posed, factor) + _still_marks(geometry, posed)
@@ -116,25 +121,26 @@ def still_drawing(geometry: SheetGeometry, title: TitleLines | None) -> Drawing:
 
 
 def moved(
-    geometry: SheetGeometry, motion: Floats, amplitude: float, phase: float, title: TitleLines | None = None
+    geometry: SheetGeometry, motion: Phased, amplitude: float, phase: float, title: TitleLines | None = None
 ) -> Drawing:
     """Return the whole sheet with the model moved to one phase (radians) of a mode, arrows included."""
     under = still_drawing(geometry, title)
-    over = frozen(geometry, pose(geometry, motion), amplitude * float(np.cos(phase)))
+    posed = pose(geometry, motion)
+    over = frozen(geometry, posed, amplitude * complex(np.exp(1j * phase)))
     return sheet_of(under.items + over.items, geometry.width, geometry.height, geometry.text_scale)
 
 
-def _over_largest(values: Floats) -> Floats:
-    shares: Floats = values / (float(np.abs(values).max(initial=0.0)) or 1.0)
+def _over_largest(values: Phased) -> Phased:
+    shares: Phased = values / (float(np.abs(values).max(initial=0.0)) or 1.0)
     return shares
 
 
-def _twist(geometry: SheetGeometry, posed: Pose, factor: float) -> tuple[Item, ...]:
+def _twist(geometry: SheetGeometry, posed: Pose, factor: complex) -> tuple[Item, ...]:
     """Draw rotation: a line of twist over the shafts, and the turning radius in every end view."""
     train = geometry.train
     if train is None:
         return ()
-    marks = geometry.points.rest[geometry.centres] + factor * posed.centre_steps
+    marks = geometry.points.rest[geometry.centres] + np.real(factor * posed.centre_steps)
     stems = np.hstack([geometry.points.rest[geometry.centres], marks])
     line = np.hstack([marks[train.pairs[:, 0]], marks[train.pairs[:, 1]]])
     shown = (
@@ -144,25 +150,33 @@ def _twist(geometry: SheetGeometry, posed: Pose, factor: float) -> tuple[Item, .
     )
     if geometry.grow < FULL:
         return shown
-    swing = factor * posed.turns * DIAL_SWING
+    swing = np.real(factor * posed.turns) * DIAL_SWING
     rim = train.dials + train.dial_radius * np.stack([-np.sin(swing), -np.cos(swing)], axis=1)
     return (*shown, Lines(np.hstack([train.dials, rim]), Role.ACCENT, 2.2))
 
 
-def _arrows(geometry: SheetGeometry, posed: Pose, factor: float) -> tuple[Item, ...]:
+def _pointing(posed: Pose, factor: complex) -> complex:
+    """Return the phase that arrows show: of a mode in step its way out or back, else that of the moment."""
+    if np.iscomplexobj(posed.steps):
+        return factor / abs(factor) if factor else 1.0
+    return 1.0 if np.real(factor) >= 0 else -1.0
+
+
+def _arrows(geometry: SheetGeometry, posed: Pose, factor: complex) -> tuple[Item, ...]:
     """Draw one arrow beside each body along its motion, and one round it where it turns."""
-    sign = 1.0 if factor >= 0 else -1.0
+    way = _pointing(posed, factor)
+    turns = np.real(way * posed.turns)
     if geometry.train is not None:
-        return _turn_arrows(geometry.train.dials, geometry.train.dial_radius + 4, posed.turns * sign)
+        return _turn_arrows(geometry.train.dials, geometry.train.dial_radius + 4, turns)
     moving = posed.sizes > STILL
-    steps = sign * posed.centre_steps * (ARROW / geometry.reach)
+    steps = np.real(way * posed.centre_steps) * (ARROW / geometry.reach)
     long = moving & (np.hypot(steps[:, 0], steps[:, 1]) > 3.0)
     boxes = geometry.boxes
     beside = np.stack([boxes[:, 0] - 13.0 - np.abs(steps[:, 0]) / 2, boxes[:, [1, 3]].mean(axis=1)], axis=1)
     start = beside - steps / 2
     items: tuple[Item, ...] = (Lines(arrow(start[long], steps[long]), Role.ACCENT, 2.0),)
-    centres = geometry.points.rest[geometry.centres] + factor * posed.centre_steps
-    return items + _turn_arrows(centres[moving], 12.0, posed.turns[moving] * sign)
+    centres = geometry.points.rest[geometry.centres] + np.real(factor * posed.centre_steps)
+    return items + _turn_arrows(centres[moving], 12.0, turns[moving])
 
 
 def _turn_arrows(centres: Floats, radius: float, turns: Floats) -> tuple[Item, ...]:

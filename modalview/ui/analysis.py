@@ -15,6 +15,7 @@ class Analysis(QObject):
 
     outlook_changed = Signal()
     solution_changed = Signal()
+    damped_changed = Signal()
     busy_changed = Signal()
     failed = Signal(object)
 
@@ -25,6 +26,9 @@ class Analysis(QObject):
         self.automatic = True
         self.outlook: Any = None  # study.Outlook
         self.solution: Any = None  # study.Solution
+        self.damped: Any = None  # study.damped.DampedSolution, where there are dashpots
+        self.plane: Any = None  # drawing.complexplanecontent of this model or of the one before
+        self.plane_why = ""
         self.refusal: Exception | None = None
         self.looking = False
         self.finding = False
@@ -35,6 +39,11 @@ class Analysis(QObject):
         worker.answered.connect(self._on_answered)
 
     @property
+    def damped_current(self) -> bool:
+        """Whether the damped modes are those of the model on the sheet."""
+        return self.damped is not None and self.damped.outlook.request.model is self._model
+
+    @property
     def solution_current(self) -> bool:
         """Whether the modes are those of the model on the sheet."""
         return self.solution is not None and self.solution.outlook.request.model is self._model
@@ -43,9 +52,11 @@ class Analysis(QObject):
         """Drop what is known: another model was opened."""
         self._patience.stop()
         self._model = self.outlook = self.solution = self.refusal = None
+        self.damped = self.plane = None
         self._set_finding(False)
         self.outlook_changed.emit()
         self.solution_changed.emit()
+        self.damped_changed.emit()
 
     def follow(self, model: Model) -> None:
         """Study an edited model."""
@@ -94,6 +105,9 @@ class Analysis(QObject):
                 self.solution = answer.content
                 self._set_finding(False)
                 self.solution_changed.emit()
+            case Step.DAMPED:
+                self.damped, self.plane, self.plane_why = answer.content
+                self.damped_changed.emit()
             case Step.STOPPED:
                 self._set_finding(False)
             case Step.REFUSED:

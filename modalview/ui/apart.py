@@ -18,7 +18,7 @@ from modalview.errors import CancelledError, KeepclearError
 # From here on a solve in the thread would hold the window up for longer than a tenth of a second.
 LARGE_MODEL = 150
 # Of each mode the largest energy shares are sent; the window shows five.
-SHARES_SENT = 12
+SHARES_SENT = 5
 _LOOK_ROUND_S = 0.02
 _Progress = Callable[[str, float], None]
 
@@ -31,7 +31,9 @@ class Apart:
         self._line: Connection | None = None
 
     def solve(self, outlook: Any, stopped: Callable[[], bool], progress: _Progress) -> Any:
-        """Return the study.Solution of an outlook's model, found in the other process.
+        """Return the study.Solution of an outlook's model, found in the other process, and its damped modes.
+
+        The second is a study.damped.DampedSolution where the model has dashpots, else None.
 
         Raises
         ------
@@ -45,11 +47,11 @@ class Apart:
         process, line = self._running()
         try:
             line.send(outlook.request.model)
-            found = await_answer(process, line, stopped, progress)
+            found, damped = await_answer(process, line, stopped, progress)
         except (CancelledError, ProcessEndedError):
             self.close()
             raise
-        return replace(found, outlook=outlook)
+        return replace(found, outlook=outlook), damped and replace(damped, outlook=outlook)
 
     def close(self) -> None:
         """End the process, whatever it does."""
@@ -101,15 +103,23 @@ def await_answer(
 def _lean(solution: Any) -> Any:
     """Leave out what who asked has already, and the shares nobody is shown: they are most of the sending."""
     modes = tuple(
-        replace(mode, strain=mode.strain[:SHARES_SENT], kinetic=mode.kinetic[:SHARES_SENT])
+        replace(
+            mode,
+            strain=mode.strain[:SHARES_SENT],
+            kinetic=mode.kinetic[:SHARES_SENT],
+            sensitivity=(),
+        )
         for mode in solution.modes
     )
-    return replace(solution, outlook=None, modes=modes)
+    raw = replace(solution.raw, shapes=solution.raw.shapes[:, :0])
+    return replace(solution, outlook=None, modes=modes, raw=raw)
 
 
 def serve(line: Connection) -> None:
     """Run in the other process: solve the models that come until the line is closed."""
-    from modalview.study import solve  # noqa: PLC0415  (in the other process only)
+    from modalview.assembly.dampedterms import has_dashpots  # noqa: PLC0415  (in the other process only)
+    from modalview.study import solve  # noqa: PLC0415
+    from modalview.study.damped import damped  # noqa: PLC0415
     from modalview.study.results import Request  # noqa: PLC0415
 
     previous = None
@@ -122,7 +132,10 @@ def serve(line: Connection) -> None:
         try:
             found = solve(request, previous)
             previous = found.outlook
-            answer = "found", _lean(found)
+            dying = None
+            if has_dashpots(previous.assembly):
+                dying = replace(damped(request, found), outlook=None, raw=None)
+            answer = "found", (_lean(found), dying)
         except KeepclearError as error:
             answer = "refused", str(error)
         except Exception:  # noqa: BLE001  (the other process has nobody else to tell)

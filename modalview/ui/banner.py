@@ -3,7 +3,17 @@
 from typing import Any
 
 from PySide6.QtCore import Qt, QTimer, Signal
-from PySide6.QtWidgets import QFrame, QHBoxLayout, QLabel, QProgressBar, QPushButton, QSizePolicy, QWidget
+from PySide6.QtGui import QMouseEvent
+from PySide6.QtWidgets import (
+    QBoxLayout,
+    QFrame,
+    QHBoxLayout,
+    QLabel,
+    QProgressBar,
+    QPushButton,
+    QSizePolicy,
+    QWidget,
+)
 
 from modalview.ui.analysis import Analysis
 from modalview.ui.symbols import VerdictSign
@@ -17,9 +27,22 @@ _WORDS = {
 }
 
 
-class Banner(QFrame):
-    """Sign, word and sentence of the verdict; Find modes, or its progress and Cancel."""
+class _Sentence(QLabel):
+    """A click asks why; what is marked with the pointer can be copied."""
 
+    clicked = Signal()
+
+    def mouseReleaseEvent(self, event: QMouseEvent) -> None:  # noqa: N802  (Qt's name)
+        """Ask, unless something was marked."""
+        super().mouseReleaseEvent(event)
+        if event.button() == Qt.MouseButton.LeftButton and not self.hasSelectedText():
+            self.clicked.emit()
+
+
+class Banner(QFrame):
+    """Sign, word and sentence of the verdict; why; Find modes, or its progress and Cancel."""
+
+    why_asked = Signal()
     find_asked = Signal()
     cancel_asked = Signal()
 
@@ -31,7 +54,9 @@ class Banner(QFrame):
         self.sign = VerdictSign(24, self)
         self.word = QLabel(self)
         self.word.setObjectName("verdictWord")
-        self.sentence = QLabel(self)
+        self.sentence = _Sentence(self)
+        self.sentence.clicked.connect(self.why_asked)
+        self.sentence.setToolTip("Click for the whole reasoning")
         self.sentence.setObjectName("verdictSentence")
         self.sentence.setWordWrap(True)
         self.sentence.setTextInteractionFlags(Qt.TextInteractionFlag.TextSelectableByMouse)
@@ -46,6 +71,11 @@ class Banner(QFrame):
         self.find.setObjectName("findModes")
         self.find.setToolTip("Find every mode of the model (Ctrl+Enter)")
         self.find.clicked.connect(self.find_asked)
+        self.why = QPushButton("Why?", self)
+        self.why.setToolTip("Show the whole reasoning behind the verdict (Ctrl+E)")
+        self.why.setAccessibleName("Why this verdict")
+        self.why.setCheckable(True)
+        self.why.clicked.connect(self.why_asked)
         # A search that is over in a blink shows no progress: it would only flicker.
         self._patience = QTimer(self, interval=_BLINK_MS, singleShot=True)
         self._patience.timeout.connect(lambda: self._show_progress(shown=True))
@@ -59,8 +89,16 @@ class Banner(QFrame):
         layout.addWidget(self.sign)
         layout.addWidget(self.word)
         layout.addWidget(self.sentence, 1)
-        for widget in (self.progress, self.cancel, self.find):
-            layout.addWidget(widget)
+        self._buttons = QBoxLayout(QBoxLayout.Direction.LeftToRight)
+        self._buttons.setSpacing(6)
+        for widget in (self.why, self.progress, self.cancel, self.find):
+            self._buttons.addWidget(widget)
+        layout.addLayout(self._buttons)
+
+    def stack_buttons(self, *, stacked: bool) -> None:
+        """Put the buttons one above the other, where the sentence needs the width."""
+        direction = QBoxLayout.Direction
+        self._buttons.setDirection(direction.BottomToTop if stacked else direction.LeftToRight)
 
     def set_theme(self, theme: Theme) -> None:
         """Repaint the sign."""
@@ -75,6 +113,7 @@ class Banner(QFrame):
         self.word.setText(word)
         self.word.setVisible(bool(word))
         self.sign.setVisible(bool(sentence))
+        self.why.setVisible(analysis.outlook is not None)
         self.word.setProperty("verdict", verdict or "none")
         self.word.style().polish(self.word)
         self._keep_height(settled=not (analysis.looking or analysis.finding))

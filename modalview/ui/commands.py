@@ -1,13 +1,35 @@
 """The one undo command: it wraps any edit of the model."""
 
+from dataclasses import dataclass
 from typing import TYPE_CHECKING
 
 from PySide6.QtGui import QUndoCommand
 
 from modalview.model.edits import Edit
+from modalview.model.parts import Model
 
 if TYPE_CHECKING:
     from modalview.ui.document import Document
+
+
+@dataclass(frozen=True, slots=True)
+class Together:
+    """Several edits as one: done and undone in one step, with one study after it."""
+
+    edits: tuple[Edit, ...]
+    text: str
+
+    def apply(self, model: Model) -> Model:
+        """Return the model with all changes."""
+        for edit in self.edits:
+            model = edit.apply(model)
+        return model
+
+    def revert(self, model: Model) -> Model:
+        """Return the model without them."""
+        for edit in reversed(self.edits):
+            model = edit.revert(model)
+        return model
 
 
 class EditCommand(QUndoCommand):

@@ -1,16 +1,18 @@
 """The open model, its file and its undo stack: every change of the model goes through here."""
 
 import time
+from collections.abc import Sequence
 from pathlib import Path
 
 from PySide6.QtCore import QObject, Signal
 from PySide6.QtGui import QUndoStack
 
+from modalview.errors import InputError
 from modalview.model.addresses import Address
 from modalview.model.edits import Edit, set_typed
 from modalview.model.parts import Model
 from modalview.store import FileStamp, open_model, save_model
-from modalview.ui.commands import EditCommand
+from modalview.ui.commands import EditCommand, Together
 
 
 class Document(QObject):
@@ -71,6 +73,36 @@ class Document(QObject):
         edit = set_typed(self.model, address, text)
         if edit.old != edit.new:
             self.push(edit)
+
+    def type_values(self, typed: Sequence[tuple[Address, str]], text: str) -> dict[Address, InputError]:
+        """Type several texts as one edit; return the reasons of those that are refused and change nothing.
+
+        What is refused is tried once more after the others: some values are only right together.
+        """
+        if self.model is None:
+            return {}
+        edits: list[Edit] = []
+        refused: dict[Address, InputError] = {}
+        model, left = self.model, list(typed)
+        while left:
+            again = []
+            for address, one in left:
+                try:
+                    edit = set_typed(model, address, one)
+                except InputError as error:
+                    refused[address] = error
+                    again.append((address, one))
+                    continue
+                refused.pop(address, None)
+                if edit.old != edit.new:
+                    edits.append(edit)
+                    model = edit.apply(model)
+            if len(again) == len(left):
+                break
+            left = again
+        if edits:
+            self.push(Together(tuple(edits), text))
+        return refused
 
     def push(self, edit: Edit) -> None:
         """Make an edit that can be undone."""

@@ -3,15 +3,13 @@
 from typing import Any
 
 from PySide6.QtCore import Qt
-from PySide6.QtGui import QFontMetrics
+from PySide6.QtGui import QFontMetrics, QResizeEvent
 from PySide6.QtWidgets import (
     QApplication,
-    QHBoxLayout,
-    QLabel,
     QMainWindow,
     QSplitter,
     QStackedWidget,
-    QTabBar,
+    QStyle,
     QVBoxLayout,
     QWidget,
 )
@@ -25,14 +23,19 @@ from modalview.ui.dialogs import ReadingDialog
 from modalview.ui.document import Document
 from modalview.ui.examples import bundled_examples, first_of_each
 from modalview.ui.menus import Menus, keyboard_text
-from modalview.ui.modes import Modes
+from modalview.ui.modes import DampedModes, Modes
+from modalview.ui.pages import Pages
 from modalview.ui.parttable import PartTable
-from modalview.ui.playbar import PlayBar
+from modalview.ui.planeview import PlaneView
+from modalview.ui.playbar import PlayBar, speed_of
+from modalview.ui.reasons import Reasons
 from modalview.ui.results import Results
 from modalview.ui.scale import ScalePanel
-from modalview.ui.settings import Settings
+from modalview.ui.settings import Setting, Settings, settings_text
+from modalview.ui.settingsdialog import SettingsDialog
 from modalview.ui.sheet import Sheet
 from modalview.ui.status import StatusLine
+from modalview.ui.swing import FULL_TURN, Swing
 from modalview.ui.theme import apply_theme
 from modalview.ui.welcome import Welcome
 
@@ -40,6 +43,9 @@ _SIZE = (1280, 800)
 _ZOOM = 1.25
 # In heights of a line, so that larger text keeps its room.
 _RESULTS_WIDTH, _BELOW_HEIGHT = 17.5, 13.5
+# Smaller windows, in heights of a line, put scale and results, or sheet and modes, under tabs.
+_THREE_COLUMNS, _TWO_ROWS = 60.0, 34.0
+_PHASE_STEP = FULL_TURN / 24
 
 
 class Frame(QMainWindow):
@@ -56,16 +62,20 @@ class Frame(QMainWindow):
         self.resize(*_SIZE)
         self.setMinimumSize(840, 540)
         self.setAcceptDrops(True)
+        self.swing = Swing(self)
         self.banner = Banner(self)
-        self.sheet = Sheet(self)
-        self.play_bar = PlayBar(self)
+        self.sheet = Sheet(self.swing, self)
+        self.play_bar = PlayBar(self.swing, self)
         self.scale = ScalePanel(self)
         self.results = Results(self.document, self.analysis, self)
-        self.modes = Modes(self)
+        self.modes = Modes(self.swing, self)
+        self.damped = DampedModes(self.swing, self)
+        self.plane = PlaneView(self)
         self.parts = PartTable(self.document, self)
         self.status = StatusLine(self.statusBar())
         self.welcome = Welcome(first_of_each(bundled_examples()), self)
         self.work = QWidget(self)
+        self.reasons = Reasons(self.work)
         column = QVBoxLayout(self.work)
         column.setContentsMargins(0, 0, 0, 0)
         column.setSpacing(0)
@@ -77,20 +87,33 @@ class Frame(QMainWindow):
         self.setCentralWidget(self.pages)
 
     def _places(self) -> QSplitter:
-        left = QSplitter(Qt.Orientation.Vertical, self)
-        left.addWidget(self._drawing())
-        left.addWidget(self._tabs())
-        left.setStretchFactor(0, 1)
-        left.setSizes([440, 236])
-        left.setChildrenCollapsible(False)
-        places = QSplitter(Qt.Orientation.Horizontal, self)
-        for widget in (left, self.scale, self.results):
-            places.addWidget(widget)
-        places.setStretchFactor(0, 3)
-        places.setStretchFactor(1, 1)
-        places.setSizes([652, 322, 306])
-        places.setChildrenCollapsible(False)
-        return places
+        self._above = self._drawing()
+        self.below = Pages("Places under the sheet", self)
+        self.proof = self.below.line
+        for name, title, place in (
+            ("modes", "Modes", self.modes),
+            ("damped", "Damped", self.damped),
+            ("plane", "Complex plane", self.plane),
+            ("values", "Values", self.parts),
+        ):
+            self.below.add(name, title, place)
+        self.below.offer("damped", there=False)
+        self._left = QSplitter(Qt.Orientation.Vertical, self)
+        self._left.addWidget(self._above)
+        self._left.addWidget(self.below)
+        self._left.setStretchFactor(0, 1)
+        self._left.setSizes([440, 236])
+        self._left.setChildrenCollapsible(False)
+        self.side = Pages("Frequency scale or results", self)
+        self.side.hide()
+        self._columns = QSplitter(Qt.Orientation.Horizontal, self)
+        for widget in (self._left, self.scale, self.results, self.side):
+            self._columns.addWidget(widget)
+        self._columns.setStretchFactor(0, 3)
+        self._columns.setStretchFactor(1, 1)
+        self._columns.setSizes([652, 322, 306, 0])
+        self._columns.setChildrenCollapsible(False)
+        return self._columns
 
     def _drawing(self) -> QWidget:
         above = QWidget(self)
@@ -102,30 +125,48 @@ class Frame(QMainWindow):
         layout.addWidget(self.play_bar)
         return above
 
-    def _tabs(self) -> QWidget:
-        below = self.below = QWidget(self)
-        self.tabs = QTabBar(below)
-        self.tabs.setDrawBase(False)
-        self.tabs.addTab("Modes")
-        self.tabs.addTab("Values")
-        self.tabs.setAccessibleName("Modes or values")
-        self.proof = QLabel(below)
-        self.proof.setProperty("role", "small")
-        self.proof.setWordWrap(True)
-        self._pages = QStackedWidget(below)
-        self._pages.addWidget(self.modes)
-        self._pages.addWidget(self.parts)
-        self.tabs.currentChanged.connect(self._pages.setCurrentIndex)
-        top = QHBoxLayout()
-        top.setContentsMargins(8, 0, 12, 0)
-        top.addWidget(self.tabs)
-        top.addWidget(self.proof, 1)
-        layout = QVBoxLayout(below)
-        layout.setContentsMargins(0, 0, 0, 0)
-        layout.setSpacing(0)
-        layout.addLayout(top)
-        layout.addWidget(self._pages, 1)
-        return below
+    # Room
+
+    def resizeEvent(self, event: QResizeEvent) -> None:  # noqa: N802  (Qt's name)
+        """Let places share tabs where there is no room for all of them."""
+        super().resizeEvent(event)
+        self.arrange()
+
+    def arrange(self) -> None:
+        """Put the places side by side, or under tabs in a window too small for its text."""
+        line = QFontMetrics(QApplication.font()).height()
+        self._share_columns(shared=self.width() < _THREE_COLUMNS * line)
+        if not self.reasons.isHidden():
+            self.reasons.lie_over(self._columns.geometry())
+        self._share_rows(shared=self.height() < _TWO_ROWS * line)
+
+    def _share_columns(self, *, shared: bool) -> None:
+        if shared == self.side.has("scale"):
+            return
+        if shared:
+            self.side.add("scale", "Scale", self.scale)
+            self.side.add("results", "Results", self.results)
+            self.side.show()
+            self._columns.setSizes([round(0.58 * self.width()), round(0.42 * self.width())])
+        else:
+            for number, name in enumerate(("scale", "results"), start=1):
+                place = self.side.take(name)
+                self._columns.insertWidget(number, place)
+                place.show()
+            self.side.hide()
+            self._columns.setSizes([round(share * self.width()) for share in (0.51, 0.25, 0.24)] + [0])
+        self.banner.stack_buttons(stacked=shared)
+
+    def _share_rows(self, *, shared: bool) -> None:
+        if shared == self.below.has("sheet"):
+            return
+        if shared:
+            self.below.add("sheet", "Sheet", self._above, at=0)
+            self.below.show_page("sheet")
+        else:
+            self._left.insertWidget(0, self.below.take("sheet"))
+            self._above.show()
+            self._left.setSizes([440, 236])
 
     # Looks
 
@@ -134,9 +175,12 @@ class Frame(QMainWindow):
         percent = self._settings.get(names.TEXT_SIZE)
         theme = apply_theme(QApplication.instance(), self._settings.get(names.THEME), percent)
         self.banner.set_theme(theme)
+        self.reasons.set_theme(theme)
         self.sheet.set_theme(theme, percent / 100)
         self.scale.canvas.set_theme(theme, percent / 100)
         self.modes.set_theme(theme)
+        self.damped.set_theme(theme)
+        self.plane.canvas.set_theme(theme, percent / 100)
         self.results.set_theme(theme)
         self.parts.lines.set_theme(theme)
         self.parts.fit_columns()
@@ -145,16 +189,39 @@ class Frame(QMainWindow):
         self.results.setMinimumWidth(round(_RESULTS_WIDTH * line))
         self.below.setMinimumHeight(round(_BELOW_HEIGHT * line))
         self.welcome.set_theme(theme)
+        self.arrange()
 
-    def on_theme(self, choice: Any) -> None:
-        """Light, dark or the system's."""
-        self._settings.set(names.THEME, choice)
-        self.apply_theme()
+    def on_settings(self) -> None:
+        """Ask for the settings."""
+        SettingsDialog(self._settings, self.on_setting, self).open()
 
-    def on_text_size(self, percent: Any) -> None:
-        """Enlarge all text."""
-        self._settings.set(names.TEXT_SIZE, percent)
-        self.apply_theme()
+    def on_setting(self, setting: Setting, value: Any) -> None:
+        """Keep a setting and let it hold at once."""
+        self._settings.set(setting, value)
+        if setting in (names.THEME, names.TEXT_SIZE):
+            self.apply_theme()
+        elif setting is names.DISCS:
+            self.on_discs(value)
+        elif setting is names.MOTION:
+            self._move(self.motion_wanted())
+        elif setting is names.UNITS:
+            self.show_units()
+        elif setting is names.AUTOMATIC:
+            self.menus.actions["on_automatic"].setChecked(value)
+
+    def motion_wanted(self) -> bool:
+        """Return whether modes move by themselves: not where motion is to be reduced."""
+        choice = self._settings.get(names.MOTION)
+        reduced = choice == "on" or (choice == "system" and _motion_unwanted())
+        return self._settings.get(names.MOVE) and not reduced
+
+    def show_units(self) -> None:
+        """Show converted values in the units chosen; the window knows the model."""
+        raise NotImplementedError
+
+    def on_settings_help(self) -> None:
+        """Say what every setting does."""
+        ReadingDialog("Settings", settings_text(), self).open()
 
     # On the sheet and between the places
 
@@ -172,20 +239,27 @@ class Frame(QMainWindow):
 
     def on_go_to_sheet(self) -> None:
         """Give the keyboard to the sheet."""
+        self.below.show_page("sheet")
         self.sheet.setFocus()
 
     def on_go_to_modes(self) -> None:
         """Give the keyboard to the row of modes."""
-        self.tabs.setCurrentIndex(0)
+        self.below.show_page("modes")
         self.modes.row.setFocus()
 
     def on_go_to_values(self) -> None:
         """Give the keyboard to the parts table."""
-        self.tabs.setCurrentIndex(1)
+        self.below.show_page("values")
         self.parts.setFocus()
+
+    def on_go_to_plane(self) -> None:
+        """Give the keyboard to the complex plane."""
+        self.below.show_page("plane")
+        self.plane.setFocus()
 
     def on_go_to_results(self) -> None:
         """Give the keyboard to the first field of the results."""
+        self.side.show_page("results")
         self.results.setFocus()
         self.results.focusNextChild()
 
@@ -202,8 +276,42 @@ class Frame(QMainWindow):
         kept = self.play_bar.blockSignals(True)
         self.play_bar.set_moving(moving)
         self.play_bar.blockSignals(kept)
-        self.sheet.set_moving(moving)
-        self.modes.row.set_moving(moving)
+        self.swing.run(moving)
+
+    def on_why(self) -> None:
+        """Unfold the reasoning behind the verdict, or fold it."""
+        if self.reasons.isHidden():
+            self.reasons.lie_over(self._columns.geometry())
+            self.reasons.open()
+        else:
+            self.reasons.fold()
+        self.banner.why.setChecked(not self.reasons.isHidden())
+
+    def on_faster(self) -> None:
+        """Let the mode move faster."""
+        self.play_bar.speed.setValue(self.play_bar.speed.value() + self.play_bar.speed.pageStep())
+
+    def on_slower(self) -> None:
+        """Let the mode move slower."""
+        self.play_bar.speed.setValue(self.play_bar.speed.value() - self.play_bar.speed.pageStep())
+
+    def on_phase_on(self) -> None:
+        """Stand still, a little further in the swing."""
+        self._step_phase(_PHASE_STEP)
+
+    def on_phase_back(self) -> None:
+        """Stand still, a little back in the swing."""
+        self._step_phase(-_PHASE_STEP)
+
+    def _step_phase(self, by: float) -> None:
+        phase = self.swing.phase
+        self._move(False)
+        self.swing.put(phase + by)
+
+    def on_speed(self, steps: int) -> None:
+        """Move the mode faster or slower."""
+        self._settings.set(names.SPEED, steps)
+        self.swing.set_speed(speed_of(steps))
 
     def on_amplitude(self, percent: int) -> None:
         """Move the mode farther or less."""
@@ -225,3 +333,9 @@ class Frame(QMainWindow):
         text = (resources() / "cautions.md").read_text(encoding="utf-8")
         version = f"\nVersion {__version__}. MIT licence, without any warranty.\n"
         ReadingDialog("About Keepclear", text + version, self).open()
+
+
+def _motion_unwanted() -> bool:
+    """Whether the desktop asks for no animation."""
+    hint = QStyle.StyleHint.SH_Widget_Animation_Duration
+    return QApplication.style().styleHint(hint) == 0

@@ -3,7 +3,7 @@
 from collections.abc import Callable
 from dataclasses import dataclass
 
-from PySide6.QtGui import QAction, QActionGroup, QKeySequence
+from PySide6.QtGui import QAction, QKeySequence
 from PySide6.QtWidgets import QMainWindow, QMenu
 
 Key = QKeySequence.StandardKey | str | None
@@ -33,7 +33,15 @@ MENUS: dict[str, tuple[Item, ...]] = {
         SEPARATOR,
         Item("&Quit", "close", "Ctrl+Q"),
     ),
-    "&Edit": (Item("&Undo", "undo", _KEYS.Undo), Item("&Redo", "redo", _KEYS.Redo)),
+    "&Edit": (
+        Item("&Undo", "undo", _KEYS.Undo),
+        Item("&Redo", "redo", _KEYS.Redo),
+        SEPARATOR,
+        Item("&Copy values", "on_copy"),
+        Item("&Paste values", "on_paste"),
+        SEPARATOR,
+        Item("&Settings…", "on_settings", "Ctrl+,"),
+    ),
     "&View": (
         Item("&Fit the sheet", "on_fit", "Ctrl+0"),
         Item("Zoom &in", "on_zoom_in", _KEYS.ZoomIn),
@@ -43,10 +51,10 @@ MENUS: dict[str, tuple[Item, ...]] = {
         Item("Go to the &modes", "on_go_to_modes", "Alt+2"),
         Item("Go to the &values", "on_go_to_values", "Alt+3"),
         Item("Go to the &results", "on_go_to_results", "Alt+4"),
+        Item("Go to the complex &plane", "on_go_to_plane", "Alt+5"),
+        Item("&Why this verdict", "on_why", "Ctrl+E"),
         SEPARATOR,
         Item("&Gershgorin bounds on the scale", "on_discs", None, checkable=True),
-        Item("&Colours", "themes"),
-        Item("&Text size", "text_sizes"),
     ),
     "&Modes": (
         Item("&Find modes", "on_find", "Ctrl+Return"),
@@ -55,9 +63,14 @@ MENUS: dict[str, tuple[Item, ...]] = {
         Item("&Next mode", "on_next_mode", "Ctrl+Right"),
         Item("&Previous mode", "on_previous_mode", "Ctrl+Left"),
         Item("Let the mode &move", "on_move", "Ctrl+M", checkable=True),
+        Item("Move fas&ter", "on_faster", "Ctrl+Up"),
+        Item("Move s&lower", "on_slower", "Ctrl+Down"),
+        Item("Phase &on", "on_phase_on", "Ctrl+Shift+Right"),
+        Item("Phase &back", "on_phase_back", "Ctrl+Shift+Left"),
     ),
     "&Help": (
         Item("&Keyboard", "on_keyboard", "F1"),
+        Item("What the &settings do", "on_settings_help"),
         Item("&About Keepclear", "on_about"),
     ),
 }
@@ -105,20 +118,6 @@ class Menus:
         menu.addAction(action)
         self.actions[item.do] = action
 
-    def offer(
-        self, name: str, choices: dict[str, object], chosen: object, choose: Callable[[object], object]
-    ) -> None:
-        """Fill a submenu of which one line is ticked."""
-        menu = self.submenus[name]
-        menu.clear()
-        group = QActionGroup(menu)
-        for text, value in choices.items():
-            action = menu.addAction(text)
-            action.setCheckable(True)
-            action.setChecked(value == chosen)
-            group.addAction(action)
-            action.triggered.connect(lambda _checked=False, value=value: choose(value))
-
 
 def keyboard_text() -> str:
     """Return the list of keys in markdown, read from the menus so that it cannot lie."""
@@ -135,6 +134,8 @@ def keyboard_text() -> str:
 _ELSEWHERE = (
     ("Edit the value under the cursor", "Enter, F2 or just type"),
     ("Take the edit / leave it", "Enter / Esc"),
+    ("Copy and paste values, as a spreadsheet does", "Ctrl+C, Ctrl+V in the values"),
+    ("Fold the reasoning", "Esc in it"),
     ("Choose a mode", "arrow keys in the row of modes"),
     ("Zoom on the sheet", "wheel, + and -"),
     ("Move the sheet", "arrow keys, middle button, or Space held and left button"),

@@ -9,7 +9,15 @@ from PySide6.QtWidgets import QStyle, QStyledItemDelegate, QStyleOptionViewItem
 
 from modalview.model.parts import Model
 from modalview.ui.canvas import paint_drawing
-from modalview.ui.modelist import ModeList, frequency_text, percent, range_text
+from modalview.ui.modelist import (
+    ModeList,
+    damped_facts,
+    frequency_text,
+    is_damped,
+    percent,
+    range_text,
+)
+from modalview.ui.swing import Swing
 from modalview.ui.symbols import IN_BAND, paint_sign
 from modalview.ui.theme import LIGHT, Theme
 
@@ -38,12 +46,12 @@ class _Now:
 class ModeCard(QStyledItemDelegate):
     """Paints a card; the small pictures are laid out once per model and size of card."""
 
-    def __init__(self, parent: QObject | None = None) -> None:
+    def __init__(self, swing: Swing, parent: QObject | None = None) -> None:
         super().__init__(parent)
+        self._swing = swing
         self._theme: Theme = LIGHT
         self._model: Model | None = None
         self._room, self._height = 0, 190
-        self.factor = 1.0  # where the small pictures stand in their swing, -1..1
         # By size in pixels: cards with a longer name or fewer shares leave their picture another height.
         self._small: dict[tuple[int, int], Any] = {}
         self._drawn: Any = None
@@ -159,6 +167,8 @@ class ModeCard(QStyledItemDelegate):
         small = QFont(painter.font())
         small.setPointSizeF(_SMALL * small.pointSizeF())
         line = QFontMetricsF(small).height()
+        if is_damped(mode):
+            return self._paint_facts(painter, inner, mode, small)
         shares = mode.strain[:_BARS] if mode.kind == "elastic" else ()
         top = inner.bottom() - line * (1 + len(shares))
         for row, share in enumerate(shares):
@@ -172,6 +182,17 @@ class ModeCard(QStyledItemDelegate):
             name = place.adjusted(0, 0, -figure, 0)
             self._write(painter, name, f"mass: {lead.label}", self._theme.quiet, font=small)
             self._write(painter, place, percent(lead.fraction), self._theme.quiet, small, _RIGHT)
+        return top - 2
+
+    def _paint_facts(self, painter: QPainter, inner: QRectF, mode: Any, small: QFont) -> float:
+        """Paint name and figure of what is known of a root, from the bottom; return their top."""
+        line = QFontMetricsF(small).height()
+        facts = damped_facts(mode)[: _BARS + 1]
+        top = inner.bottom() - line * len(facts)
+        for row, (name, figure) in enumerate(facts):
+            place = QRectF(inner.left(), top + row * line, inner.width(), line)
+            self._write(painter, place, name, self._theme.quiet, small)
+            self._write(painter, place, figure, self._theme.ink, small, _RIGHT)
         return top - 2
 
     def _paint_bar(self, painter: QPainter, row: QRectF, share: Any, font: QFont) -> None:
@@ -204,7 +225,9 @@ class ModeCard(QStyledItemDelegate):
         if posed is None:
             posed = self._posed[mode.number, size] = motion.pose(small, mode.motion)
         painter.translate(place.topLeft())
-        paint_drawing(painter, modepicture.mode_picture(small, posed, self.factor), self._theme)
+        fading = getattr(mode, "overdamped", False)
+        factor = self._swing.fading() if fading else self._swing.factor()
+        paint_drawing(painter, modepicture.mode_picture(small, posed, factor), self._theme)
         painter.translate(-place.topLeft())
 
     @staticmethod

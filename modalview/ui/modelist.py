@@ -24,6 +24,8 @@ def frequency_text(mode: Any) -> str:
         return "0 Hz"
     if mode.kind == "unstable":
         return "unstable"
+    if is_damped(mode):
+        return _damped_frequency(mode)
     digits = min(LIST_DIGITS, shown_digits(mode.frequency_hz, mode.numerical_error_hz))
     return f"{significant(mode.frequency_hz, digits)} Hz"
 
@@ -39,10 +41,55 @@ def range_text(mode: Any) -> str:
         return "rigid-body mode"
     if mode.kind == "unstable":
         return ""
+    if is_damped(mode):
+        return ratio_text(mode)
     low, high = mode.range_hz
     if low == high:
         return "no tolerance"
     return f"{significant(low, LIST_DIGITS)} to {significant(high, LIST_DIGITS)}"
+
+
+def is_damped(mode: Any) -> bool:
+    """Return whether a mode is a root of a model with dashpots, not a natural mode."""
+    return hasattr(mode, "root")
+
+
+def _damped_frequency(mode: Any) -> str:
+    if mode.damped_hz <= 0:
+        return "decays"
+    digits = min(LIST_DIGITS, shown_digits(abs(mode.root), mode.error_per_s))
+    return f"{significant(mode.damped_hz, digits)} Hz"
+
+
+def ratio_text(mode: Any) -> str:
+    """Return the damping ratio of a root.
+
+    >>> from types import SimpleNamespace as Mode
+    >>> ratio_text(Mode(damping_ratio=0.0321)), ratio_text(Mode(damping_ratio=1e-12))
+    ('damping 3.21 %', 'not damped')
+    """
+    ratio = mode.damping_ratio
+    if ratio is None:
+        return "no ratio"
+    return f"damping {significant(100 * ratio, 3)} %" if ratio >= _UNDAMPED else "not damped"
+
+
+def damped_facts(mode: Any) -> tuple[tuple[str, str], ...]:
+    """Return what a card of a root says below its picture: name and figure."""
+    facts = [("decay", f"{significant(mode.decay_per_s, 3)} 1/s")]
+    if mode.time_constant_s is not None:
+        facts.append(("falls to 37 % in", f"{significant(mode.time_constant_s, 3)} s"))
+    if mode.log_decrement is not None:
+        facts.append(("log decrement", significant(mode.log_decrement, 3)))
+    if mode.natural_hz is not None:
+        facts.append(("natural", f"{significant(mode.natural_hz, LIST_DIGITS)} Hz"))
+    if mode.partner is not None:
+        facts.append(("one mode with root", str(mode.partner)))
+    return tuple(facts)
+
+
+# A ratio below this is rounding.
+_UNDAMPED = 1e-8
 
 
 def percent(fraction: float) -> str:
@@ -56,6 +103,12 @@ def percent(fraction: float) -> str:
 
 def details(mode: Any) -> str:
     """Return all that is known of a mode, for the tool tip."""
+    if is_damped(mode):
+        head = f"Root {mode.number}: {mode.name}"
+        facts = [f"{name}: {figure}" for name, figure in damped_facts(mode)]
+        return "\n".join(
+            [head, f"{frequency_text(mode)}, {ratio_text(mode)}", *facts, f"root {mode.root!r} 1/s"]
+        )
     lines = [f"Mode {mode.number}: {mode.name}"]
     if mode.kind == "elastic":
         low, high = mode.range_hz
@@ -72,6 +125,9 @@ def details(mode: Any) -> str:
 
 def spoken(mode: Any, *, current: bool) -> str:
     """Return a mode in one line, for those who hear the window."""
+    if is_damped(mode):
+        facts = ", ".join(f"{name} {figure}" for name, figure in damped_facts(mode))
+        return f"Root {mode.number}: {frequency_text(mode)}, {ratio_text(mode)}, {mode.name}. {facts}"
     shares = ", ".join(f"{one.label} {percent(one.fraction)}" for one in mode.strain[:3])
     old = "" if current else " (of an older model)"
     return f"Mode {mode.number}{old}: {frequency_text(mode)}, {range_text(mode)}, {mode.name}. {shares}"
@@ -132,7 +188,7 @@ class ModeList(QAbstractListModel):
 def _modes_in_band(solution: Any) -> dict[int, str]:
     """Return the label of the check in whose band each mode lies at nominal values."""
     found: dict[int, str] = {}
-    bands = [check.band for check in solution.checks if check.inside]
+    bands = [check.band for check in getattr(solution, "checks", ()) if check.inside]
     for mode in solution.modes:
         for band in bands:
             low, high = (edge / _TURN for edge in band.nominal)

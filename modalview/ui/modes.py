@@ -1,10 +1,9 @@
 """The row of found modes under the sheet; the chosen one moves there."""
 
-import math
 from time import perf_counter
 from typing import Any
 
-from PySide6.QtCore import QElapsedTimer, QModelIndex, Qt, QTimer, Signal
+from PySide6.QtCore import QModelIndex, Qt, QTimer, Signal
 from PySide6.QtGui import QPaintEvent, QResizeEvent
 from PySide6.QtWidgets import QAbstractItemView, QFrame, QLabel, QListView, QStackedLayout, QWidget
 
@@ -12,13 +11,13 @@ from modalview.model.parts import Model
 from modalview.ui.analysis import Analysis
 from modalview.ui.modecard import ModeCard
 from modalview.ui.modelist import ModeList
+from modalview.ui.swing import Swing
 from modalview.ui.theme import Theme
 
 # The small pictures need fewer frames than the sheet.
 FRAME_MS = 40
 # Painting them takes at most this share of the time.
 MOST_SHARE = 0.12
-SWING_S = 1.6
 
 
 class ModeRow(QListView):
@@ -26,10 +25,11 @@ class ModeRow(QListView):
 
     mode_chosen = Signal(object)  # study.FoundMode or None
 
-    def __init__(self, parent: QWidget | None = None) -> None:
+    def __init__(self, swing: Swing, parent: QWidget | None = None) -> None:
         super().__init__(parent)
+        self._swing = swing
         self.modes = ModeList(self)
-        self.card = ModeCard(self)
+        self.card = ModeCard(swing, self)
         self.setModel(self.modes)
         self.setItemDelegate(self.card)
         self.setObjectName("modeRow")
@@ -42,10 +42,10 @@ class ModeRow(QListView):
         self.setHorizontalScrollMode(QAbstractItemView.ScrollMode.ScrollPerPixel)
         self.setVerticalScrollBarPolicy(Qt.ScrollBarPolicy.ScrollBarAlwaysOff)
         self.selectionModel().currentChanged.connect(self._on_current_changed)
-        self._phase_s = 0.0
-        self._clock = QElapsedTimer()
         self._timer = QTimer(self, interval=FRAME_MS)
-        self._timer.timeout.connect(self._on_frame)
+        self._timer.timeout.connect(self.viewport().update)
+        swing.running_changed.connect(self._run)
+        swing.moved.connect(self.viewport().update)
 
     def chosen(self) -> Any:
         """Return the chosen mode, or None."""
@@ -56,21 +56,37 @@ class ModeRow(QListView):
         if 0 <= row < self.modes.rowCount():
             self.setCurrentIndex(self.modes.index(row))
 
+    def show_found(self, solution: Any) -> None:
+        """Show the modes of a model, keeping the place of the chosen one; None shows none."""
+        row = max(self.currentIndex().row(), 0)
+        self.card.set_model(None if solution is None else _model_of(solution))
+        silent = self.blockSignals(True)  # not every step of the exchange is a choice
+        self.modes.show_solution(solution, current=True)
+        self.choose(min(row, self.modes.rowCount() - 1))
+        self.blockSignals(silent)
+        self.fit_cards()
+
     def step(self, by: int) -> None:
         """Choose the next or the previous mode, round the end."""
         count = self.modes.rowCount()
         if count:
             self.choose((self.currentIndex().row() + by) % count)
 
-    def set_moving(self, moving: bool) -> None:  # noqa: FBT001  (a slot)
-        """Move the small pictures, or show them at their largest."""
-        if moving:
-            self._clock.start()
+    def _run(self) -> None:
+        if self._swing.running and self.isVisible() and self.modes.rowCount():
             self._timer.start()
         else:
             self._timer.stop()
-            self.card.factor = 1.0
-            self.viewport().update()
+
+    def showEvent(self, event: Any) -> None:  # noqa: N802  (Qt's name)
+        """Move again."""
+        super().showEvent(event)
+        self._run()
+
+    def hideEvent(self, event: Any) -> None:  # noqa: N802  (Qt's name)
+        """Do not move unseen."""
+        super().hideEvent(event)
+        self._timer.stop()
 
     def paintEvent(self, event: QPaintEvent) -> None:  # noqa: N802  (Qt's name)
         """Paint, and move slower where that takes long: the rest of the window comes first."""
@@ -78,12 +94,6 @@ class ModeRow(QListView):
         super().paintEvent(event)
         took_ms = 1000 * (perf_counter() - start)
         self._timer.setInterval(max(FRAME_MS, round(took_ms / MOST_SHARE)))
-
-    def _on_frame(self) -> None:
-        self._phase_s += self._clock.restart() / 1000
-        if self.isVisible() and self.modes.rowCount():
-            self.card.factor = math.sin(2 * math.pi * self._phase_s / SWING_S)
-            self.viewport().update()
 
     def _on_current_changed(self, current: QModelIndex) -> None:
         self.mode_chosen.emit(self.modes.mode(current.row()))
@@ -100,6 +110,7 @@ class ModeRow(QListView):
         self.card.set_room(self.viewport().width() // count, max(self.height() - bar - 14, 60))
         self.doItemsLayout()
         self.scrollTo(self.currentIndex())
+        self._run()
 
 
 class Modes(QWidget):
@@ -107,9 +118,9 @@ class Modes(QWidget):
 
     mode_chosen = Signal(object)
 
-    def __init__(self, parent: QWidget | None = None) -> None:
+    def __init__(self, swing: Swing, parent: QWidget | None = None) -> None:
         super().__init__(parent)
-        self.row = ModeRow(self)
+        self.row = ModeRow(swing, self)
         self.row.mode_chosen.connect(self.mode_chosen)
         self.invitation = QLabel(self)
         self.invitation.setWordWrap(True)
@@ -144,14 +155,37 @@ class Modes(QWidget):
             self.row.modes.set_current(False)
 
     def _show_found(self, solution: Any) -> None:
-        row = max(self.row.currentIndex().row(), 0)
-        self.row.card.set_model(_model_of(solution))
-        silent = self.row.blockSignals(True)  # not every step of the exchange is a choice
-        self.row.modes.show_solution(solution, current=True)
-        self.row.choose(min(row, len(solution.modes) - 1))
-        self.row.blockSignals(silent)
-        self.row.fit_cards()
+        self.row.show_found(solution)
         self.mode_chosen.emit(self.row.chosen())
+
+
+class DampedModes(QWidget):
+    """The roots of a model with dashpots: damped frequency, ratio and decay; they move with their phase."""
+
+    mode_chosen = Signal(object)
+
+    def __init__(self, swing: Swing, parent: QWidget | None = None) -> None:
+        super().__init__(parent)
+        self.row = ModeRow(swing, self)
+        self.row.setAccessibleName("Damped modes found")
+        self.row.mode_chosen.connect(self.mode_chosen)
+        layout = QStackedLayout(self)
+        layout.addWidget(self.row)
+
+    def set_theme(self, theme: Theme) -> None:
+        """Repaint the cards."""
+        self.row.card.set_theme(theme)
+        self.row.fit_cards()
+        self.row.viewport().update()
+
+    def show_analysis(self, analysis: Analysis) -> None:
+        """Show the damped modes; those of an older model are pale until found again."""
+        if analysis.damped is None:
+            self.row.show_found(None)
+        elif analysis.damped_current:
+            self.row.show_found(analysis.damped)
+        else:
+            self.row.modes.set_current(False)
 
 
 def _model_of(solution: Any) -> Model:
@@ -176,3 +210,12 @@ def evidence(analysis: Analysis) -> str:
     if not analysis.solution_current:
         return "Out of date: these modes are of the model before the last edit"
     return " · ".join(analysis.solution.evidence[:2])
+
+
+def damped_evidence(analysis: Analysis) -> str:
+    """Return why the damped modes shown can be believed, or that they are of an older model."""
+    if analysis.damped is None:
+        return ""
+    if not analysis.damped_current:
+        return "Out of date: these roots are of the model before the last edit"
+    return " · ".join((*analysis.damped.evidence[:1], *analysis.damped.notes[-1:]))

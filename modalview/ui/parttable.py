@@ -3,17 +3,20 @@
 from typing import Any
 
 from PySide6.QtCore import QAbstractTableModel, QModelIndex, QObject, QPersistentModelIndex, Qt, Signal
-from PySide6.QtGui import QColor
+from PySide6.QtGui import QColor, QGuiApplication, QKeySequence
 from PySide6.QtWidgets import QAbstractItemView, QHeaderView, QTableView, QWidget
 
 from modalview.errors import InputError
+from modalview.ui.cells import cells_of, text_of
 from modalview.ui.document import Document
 from modalview.ui.theme import LIGHT, Theme
 from modalview.ui.values import ValueRow, ValueRows
 
 _Index = QModelIndex | QPersistentModelIndex
 PART, WHAT, TYPED, CONVERTED, TOLERANCE = range(5)
-_HEADS = ("Part", "What", "Value as typed", "In SI", "Tolerance")
+_HEADS = ("Part", "What", "Value as typed", "", "Tolerance")
+_CONVERTED_HEADS = {"SI": "In SI", "mm-t": "In mm and t", "inch-pound": "In inch and lb"}
+_TYPED = (TYPED, TOLERANCE)
 _Role = Qt.ItemDataRole
 
 
@@ -27,12 +30,16 @@ class PartTableModel(QAbstractTableModel):
         self._document = document
         self.rows: list[ValueRow] = []
         self._memory = ValueRows()
+        self._system = "SI"
         self._refusals: dict[tuple[Any, int], tuple[str, str]] = {}
         self._theme: Theme = LIGHT
 
-    def show_model(self, model: Any, *, anew: bool) -> None:
-        """Show the lines of a model; ``anew`` drops the refused entries of another one."""
-        rows = self._memory.of(model)
+    def show_model(self, model: Any, *, anew: bool, system: str = "SI") -> None:
+        """Show the lines of a model, converted; ``anew`` drops the refused entries of another one."""
+        rows = self._memory.of(model, system)
+        if system != self._system:
+            self._system = system
+            self.headerDataChanged.emit(Qt.Orientation.Horizontal, CONVERTED, CONVERTED)
         same = not anew and [row.address for row in rows] == [row.address for row in self.rows]
         if same:
             self.rows = rows
@@ -63,7 +70,7 @@ class PartTableModel(QAbstractTableModel):
     def headerData(self, section: int, orientation: Qt.Orientation, role: int = _Role.DisplayRole) -> Any:  # noqa: N802
         """Return the heading of a column."""
         if orientation == Qt.Orientation.Horizontal and role == _Role.DisplayRole:
-            return _HEADS[section]
+            return _CONVERTED_HEADS[self._system] if section == CONVERTED else _HEADS[section]
         return None
 
     def flags(self, index: _Index) -> Qt.ItemFlag:
@@ -145,11 +152,51 @@ class PartTableModel(QAbstractTableModel):
         self.dataChanged.emit(self.index(index.row(), 0), self.index(index.row(), TOLERANCE))
         return True
 
+    def text_at(self, row: int, column: int) -> str:
+        """Return what a cell hands to the clipboard: a tolerance only where it is the value's own."""
+        if column == PART:
+            return self.rows[row].part
+        return str(
+            self.data(self.index(row, column), _Role.EditRole if column in _TYPED else _Role.DisplayRole)
+        )
+
+    def type_block(self, row: int, column: int, cells: list[list[str]]) -> tuple[int, int, int]:
+        """Type a block of texts from a cell on, as one edit.
+
+        Empty texts and those over what cannot be typed are passed over. Returns how many texts were taken,
+        how many were refused (they stay in sight with their reasons), and how many found no place.
+        """
+        typed: dict[Any, tuple[tuple[Any, int], str]] = {}
+        outside = 0
+        for down, line in enumerate(cells):
+            for across, text in enumerate(line):
+                if not text.strip():
+                    continue
+                index = self.index(row + down, column + across)
+                address = self._address(index)
+                if address is not None:
+                    key = (self.rows[index.row()].address, index.column())
+                    typed[address] = key, text.strip()
+                outside += not index.isValid()
+        for key, _ in typed.values():
+            self._refusals.pop(key, None)
+        count = len(typed)
+        reasons = self._document.type_values(
+            [(address, text) for address, (_, text) in typed.items()], f"paste {count} values"
+        )
+        for address, error in reasons.items():
+            key, text = typed[address]
+            self._refusals[key] = text, str(error)
+            self.refused.emit(str(error))
+        self.dataChanged.emit(self.index(0, 0), self.index(len(self.rows) - 1, TOLERANCE))
+        return count - len(reasons), len(reasons), outside
+
 
 class PartTable(QTableView):
-    """The table itself: Enter or F2 edits, Tab goes on, Esc cancels."""
+    """The table itself: Enter or F2 edits, Tab goes on, Esc cancels; blocks are copied and pasted."""
 
     part_chosen = Signal(str)
+    told = Signal(str)  # what a copy or a paste did
 
     def __init__(self, document: Document, parent: QWidget | None = None) -> None:
         super().__init__(parent)
@@ -162,7 +209,7 @@ class PartTable(QTableView):
         self.setWordWrap(False)
         self.setTabKeyNavigation(False)  # arrows move in the table, Tab leaves it
         self.setSelectionBehavior(QAbstractItemView.SelectionBehavior.SelectItems)
-        self.setSelectionMode(QAbstractItemView.SelectionMode.SingleSelection)
+        self.setSelectionMode(QAbstractItemView.SelectionMode.ContiguousSelection)
         triggers = QAbstractItemView.EditTrigger
         self.setEditTriggers(
             triggers.DoubleClicked
@@ -179,9 +226,9 @@ class PartTable(QTableView):
         head.setSectionResizeMode(CONVERTED, QHeaderView.ResizeMode.Stretch)
         self.selectionModel().currentChanged.connect(self._on_current_changed)
 
-    def show_model(self, model: Any, *, anew: bool) -> None:
+    def show_model(self, model: Any, *, anew: bool, system: str = "SI") -> None:
         """Show the values of a model."""
-        self.lines.show_model(model, anew=anew)
+        self.lines.show_model(model, anew=anew, system=system)
         if anew:
             self.fit_columns()
             quiet = self.blockSignals(True)  # choosing the first value is nobody's wish to see that part
@@ -207,8 +254,46 @@ class PartTable(QTableView):
         if current.isValid():
             self.part_chosen.emit(self.lines.rows[current.row()].part_id)
 
+    def _marked(self) -> list[QModelIndex]:
+        marked = self.selectionModel().selectedIndexes() or [self.currentIndex()]
+        return sorted((one for one in marked if one.isValid()), key=lambda one: (one.row(), one.column()))
+
+    def copy(self) -> None:
+        """Put the marked cells on the clipboard, lines and tabs as spreadsheets have them."""
+        marked = self._marked()
+        if not marked:
+            return
+        rows: dict[int, list[str]] = {}
+        for one in marked:
+            rows.setdefault(one.row(), []).append(self.lines.text_at(one.row(), one.column()))
+        QGuiApplication.clipboard().setText(text_of(list(rows.values())))
+        self.told.emit(f"{len(marked)} cell{'s' if len(marked) > 1 else ''} copied")
+
+    def paste(self) -> None:
+        """Type what is on the clipboard from the first marked cell on; one text fills all marked cells."""
+        cells, marked = cells_of(QGuiApplication.clipboard().text()), self._marked()
+        if not cells or not marked:
+            return
+        first, last = marked[0], marked[-1]
+        if len(cells) == 1 and len(cells[0]) == 1:
+            height, width = last.row() - first.row() + 1, last.column() - first.column() + 1
+            cells = [cells[0] * width for _ in range(height)]
+        taken, refused, outside = self.lines.type_block(first.row(), first.column(), cells)
+        words = [f"{taken} value{'' if taken == 1 else 's'} pasted"]
+        if refused:
+            words.append(f"{refused} cannot be read and stand in red with the reason")
+        if outside:
+            words.append(f"{outside} lie beyond the table")
+        self.told.emit("; ".join(words))
+
     def keyPressEvent(self, event: Any) -> None:  # noqa: N802  (Qt's name)
-        """Enter edits, as F2 does."""
+        """Enter edits, as F2 does; copy and paste."""
+        if event.matches(QKeySequence.StandardKey.Copy):
+            self.copy()
+            return
+        if event.matches(QKeySequence.StandardKey.Paste):
+            self.paste()
+            return
         enter = event.key() in (Qt.Key.Key_Return, Qt.Key.Key_Enter)
         plain = event.modifiers() in (Qt.KeyboardModifier.NoModifier, Qt.KeyboardModifier.KeypadModifier)
         if enter and plain and self.state() != QAbstractItemView.State.EditingState:

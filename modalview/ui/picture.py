@@ -34,8 +34,10 @@ class Look:
         Number of the mode on the sheet, standing at its largest; None takes the first.
     automatic : bool
         Whether modes are found after opening.
-    values : bool
-        Whether the values are shown in the place of the modes.
+    page : str
+        What stands under the sheet: "modes", "damped", "plane" or "values".
+    why : bool
+        Whether the reasoning is unfolded.
     text_percent : int
         Size of text.
     """
@@ -45,7 +47,8 @@ class Look:
     theme: str = "light"
     mode: int | None = None
     automatic: bool = True
-    values: bool = False
+    page: str = "modes"
+    why: bool = False
     text_percent: int = 100
 
 
@@ -94,14 +97,17 @@ def _settled(window: Window) -> bool:
         return analysis.refusal is not None
     # Between the outlook and the modes of a small model nothing is under way for a moment.
     wanted = analysis.automatic and analysis.outlook.assembly.pencil().n <= SMALL_MODEL
-    return analysis.solution_current or not (wanted or analysis.finding)
+    solved = analysis.solution_current or not (wanted or analysis.finding)
+    return solved and (analysis.plane is not None or bool(analysis.plane_why))
 
 
 def _arrange(window: Window, look: Look) -> None:
     if look.mode is not None:
         window.modes.row.choose(look.mode - 1)
-    if look.values:
-        window.on_go_to_values()
+    if look.page != "modes":
+        window.below.show_page(look.page)
+    if look.why:
+        window.on_why()
 
 
 def _wait(program: QApplication, ready: Callable[[], bool]) -> None:

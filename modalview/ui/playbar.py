@@ -1,55 +1,108 @@
-"""The small bar on the sheet: pause, which mode moves, how far."""
+"""The small bar on the sheet: pause, which mode moves, how fast, where in its swing, how far."""
 
+import math
+from dataclasses import dataclass
 from typing import Any
 
-from PySide6.QtCore import QPointF, QRectF, QSize, Qt, Signal
-from PySide6.QtGui import QColor, QIcon, QPainter, QPixmap, QPolygonF
-from PySide6.QtWidgets import QFrame, QHBoxLayout, QLabel, QSlider, QToolButton, QWidget
+from PySide6.QtCore import QPointF, QRectF, QSize, Qt, QTimer, Signal
+from PySide6.QtGui import QColor, QIcon, QPainter, QPixmap, QPolygonF, QResizeEvent
+from PySide6.QtWidgets import QFrame, QHBoxLayout, QLabel, QSizePolicy, QSlider, QToolButton, QWidget
 
 from modalview.ui.modelist import frequency_text
+from modalview.ui.swing import FULL_TURN, Swing
 from modalview.ui.theme import LIGHT, Theme
 
 _ICON_PX = 16
+# The phase shown while the mode moves need not follow every frame.
+_FOLLOW_MS = 120
+# Steps of the speed slider that double the speed.
+STEPS_PER_DOUBLE = 10
+
+
+@dataclass(frozen=True, slots=True)
+class Control:
+    """One slider: its caption, what it is for those who hear it, and its range."""
+
+    caption: str
+    spoken: str
+    low: int
+    high: int
+    page: int
+
+
+SPEED = Control("speed", "Speed of the moving mode, from a quarter to four times", -20, 20, 5)
+PHASE = Control("phase", "Phase of the mode in degrees; moving it pauses", 0, 359, 15)
+AMPLITUDE = Control("amplitude", "Amplitude of the moving mode, per cent", 5, 100, 10)
+
+
+def speed_of(step: int) -> float:
+    """Return how many times as fast a step of the slider is.
+
+    >>> speed_of(0), speed_of(10), speed_of(-20)
+    (1.0, 2.0, 0.25)
+    """
+    return float(2.0 ** (step / STEPS_PER_DOUBLE))
 
 
 class PlayBar(QFrame):
-    """Shown while a mode is chosen."""
+    """Shown while a mode is chosen; in little room captions go first, then the sliders from the left."""
 
     moving_changed = Signal(bool)
+    speed_changed = Signal(int)  # steps
     amplitude_changed = Signal(int)  # per cent
 
-    def __init__(self, parent: QWidget | None = None) -> None:
+    def __init__(self, swing: Swing, parent: QWidget | None = None) -> None:
         super().__init__(parent)
         self.setObjectName("playBar")
         self.setCursor(Qt.CursorShape.ArrowCursor)
+        self._swing = swing
         self._theme: Theme = LIGHT
+        self._there = False
         self.pause = QToolButton(self)
         self.pause.setCheckable(True)
         self.pause.setIconSize(QSize(_ICON_PX, _ICON_PX))
         self.pause.toggled.connect(self._on_toggled)
         self.name = QLabel(self)
-        self.slider = QSlider(Qt.Orientation.Horizontal, self)
-        self.slider.setRange(5, 100)
-        self.slider.setPageStep(10)
-        self.slider.setFixedWidth(90)
-        self.slider.setAccessibleName("Amplitude of the moving mode, per cent")
-        self.slider.valueChanged.connect(self.amplitude_changed)
-        amplitude = QLabel("amplitude", self)
-        amplitude.setProperty("role", "small")
-        amplitude.setBuddy(self.slider)
-        layout = QHBoxLayout(self)
-        layout.setContentsMargins(8, 3, 14, 3)
-        layout.setSpacing(8)
-        # Where it stands its room is kept, so that the drawing does not jump when modes are found.
-        self.controls = (self.pause, self.name, self.slider, amplitude)
-        for widget in self.controls:
-            policy = widget.sizePolicy()
-            policy.setRetainSizeWhenHidden(True)
-            widget.setSizePolicy(policy)
-            layout.addWidget(widget)
-        layout.addStretch(1)
+        self.name.setSizePolicy(QSizePolicy.Policy.Minimum, QSizePolicy.Policy.Preferred)
+        self._layout = QHBoxLayout(self)
+        self._layout.setContentsMargins(8, 3, 14, 3)
+        self._layout.setSpacing(8)
+        for widget in (self.pause, self.name):
+            self._add(widget)
+        self._captions: list[QLabel] = []
+        self.speed, self.phase, self.amplitude = (self._slider(one) for one in (SPEED, PHASE, AMPLITUDE))
+        self._layout.addStretch(1)
+        self.speed.valueChanged.connect(self.speed_changed)
+        self.amplitude.valueChanged.connect(self.amplitude_changed)
+        self.phase.valueChanged.connect(self._on_phase)
+        self._follower = QTimer(self, interval=_FOLLOW_MS)
+        self._follower.timeout.connect(self.show_phase)
+        swing.moved.connect(self.show_phase)
         self._show_state()
         self.show_mode(None, current=True)
+
+    def _add(self, widget: QWidget) -> None:
+        # Where it stands its room is kept, so that the drawing does not jump when modes are found.
+        policy = widget.sizePolicy()
+        policy.setRetainSizeWhenHidden(widget is self.pause)
+        widget.setSizePolicy(policy)
+        self._layout.addWidget(widget)
+
+    def _slider(self, control: Control) -> QSlider:
+        slider = QSlider(Qt.Orientation.Horizontal, self)
+        slider.setRange(control.low, control.high)
+        slider.setPageStep(control.page)
+        slider.setMinimumWidth(56)
+        slider.setMaximumWidth(110)
+        slider.setAccessibleName(control.spoken)
+        slider.setToolTip(control.spoken)
+        caption = QLabel(control.caption, self)
+        caption.setProperty("role", "small")
+        caption.setBuddy(slider)
+        self._captions.append(caption)
+        self._add(caption)
+        self._add(slider)
+        return slider
 
     @property
     def moving(self) -> bool:
@@ -59,6 +112,7 @@ class PlayBar(QFrame):
     def set_moving(self, moving: bool) -> None:  # noqa: FBT001  (a slot)
         """Press or release the pause button."""
         self.pause.setChecked(not moving)
+        self._follow()
 
     def set_theme(self, theme: Theme) -> None:
         """Redraw the button."""
@@ -67,15 +121,62 @@ class PlayBar(QFrame):
 
     def show_mode(self, mode: Any, *, current: bool) -> None:
         """Name the mode that moves."""
-        for widget in self.controls:
-            widget.setVisible(mode is not None)
+        self._there = mode is not None
         if mode is not None:
             old = "" if current else " (out of date)"
             self.name.setText(f"mode {mode.number} · {frequency_text(mode)}{old}")
+        self._fit()
+        self._follow()
+
+    def show_phase(self) -> None:
+        """Let the slider stand where the mode does."""
+        quiet = self.phase.blockSignals(True)
+        self.phase.setValue(round(math.degrees(self._swing.phase)) % 360)
+        self.phase.blockSignals(quiet)
+
+    def resizeEvent(self, event: QResizeEvent) -> None:  # noqa: N802  (Qt's name)
+        """Leave out what has no room."""
+        super().resizeEvent(event)
+        self._fit()
+
+    def _fit(self) -> None:
+        sliders = (self.speed, self.phase, self.amplitude)
+        fixed = self.pause.sizeHint().width() + self.name.sizeHint().width() + 40
+        captions = sum(one.sizeHint().width() + 8 for one in self._captions)
+        with_words = self.width() >= fixed + captions + len(sliders) * 64
+        count = max(0, min(len(sliders), (self.width() - fixed) // 64))
+        for number, (slider, caption) in enumerate(zip(sliders, self._captions, strict=True)):
+            # Of few, the phase stays longest: the other two are set once.
+            rank = (1, 0, 2)[number]
+            slider.setVisible(self._there and rank < count)
+            caption.setVisible(self._there and with_words)
+        self.pause.setVisible(self._there)
+        self.name.setVisible(self._there)
+
+    def _follow(self) -> None:
+        if self._there and self.moving and self.isVisible():
+            self._follower.start()
+        else:
+            self._follower.stop()
+
+    def showEvent(self, event: Any) -> None:  # noqa: N802  (Qt's name)
+        """Follow again."""
+        super().showEvent(event)
+        self._follow()
+
+    def hideEvent(self, event: Any) -> None:  # noqa: N802  (Qt's name)
+        """Follow nothing unseen."""
+        super().hideEvent(event)
+        self._follower.stop()
 
     def _on_toggled(self, paused: bool) -> None:  # noqa: FBT001  (a slot)
         self._show_state()
         self.moving_changed.emit(not paused)
+
+    def _on_phase(self, degrees: int) -> None:
+        if self.moving:
+            self.pause.setChecked(True)
+        self._swing.put(FULL_TURN * degrees / 360)
 
     def _show_state(self) -> None:
         word = "Pause the mode" if self.moving else "Let the mode move"

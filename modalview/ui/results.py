@@ -109,7 +109,7 @@ class Results(QScrollArea):
         self._theme = theme
         self.show_results()
 
-    def show_model(self, model: Model) -> None:
+    def show_model(self, model: Model, system: str = "SI") -> None:
         """Show the machines and the story of a model."""
         for gone in set(self._machines) - {machine.id for machine in model.machines}:
             self._machines.pop(gone).deleteLater()
@@ -117,7 +117,7 @@ class Results(QScrollArea):
             if machine.id not in self._machines:
                 form = self._machines[machine.id] = MachineForm(machine, self._document, self._inside)
                 self._forms.addWidget(form)
-            self._machines[machine.id].show_rows(machine_rows(model, machine))
+            self._machines[machine.id].show_rows(machine_rows(model, machine, system))
         _say(self.story, (model.notes,) if model.notes else ())
 
     def forget_machines(self) -> None:

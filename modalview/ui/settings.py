@@ -1,4 +1,4 @@
-"""What the program remembers between runs: declared once, with type, default and text."""
+"""What the program remembers between runs: one table from which dialog, help and validation are made."""
 
 from collections.abc import Callable
 from dataclasses import dataclass
@@ -21,36 +21,118 @@ class Setting:
         bool, int, str, list or QByteArray.
     default : Any
     text : str
-        What it does, for help and tool tips.
-    choices : tuple
-        What is allowed; empty allows everything of the kind.
+        What it does, for dialog, help and tool tips.
+    label : str
+        Its name in the dialog; "" for what is remembered without being asked for there.
+    choices : tuple of pairs
+        What is allowed and how it is called; empty allows everything of the kind.
+    low, high : int or None
+        Ends of a number, both allowed.
     """
 
     name: str
     kind: type
     default: Any
     text: str
-    choices: tuple[Any, ...] = ()
+    label: str = ""
+    choices: tuple[tuple[Any, str], ...] = ()
+    low: int | None = None
+    high: int | None = None
+
+    def allows(self, value: Any) -> bool:
+        """Return whether a value may be kept.
+
+        >>> AMPLITUDE.allows(60), AMPLITUDE.allows(300), THEME.allows("purple")
+        (True, False, False)
+        """
+        if not isinstance(value, self.kind) or (self.kind is int and isinstance(value, bool)):
+            return False
+        if self.choices:
+            return value in [one for one, _ in self.choices]
+        return (self.low is None or value >= self.low) and (self.high is None or value <= self.high)
+
+    def spoken(self, value: Any) -> str:
+        """Return how a value is called.
+
+        >>> THEME.spoken("dark"), DISCS.spoken(True), AMPLITUDE.spoken(60)
+        ('dark', 'on', '60')
+        """
+        if self.choices:
+            return dict(self.choices)[value]
+        return ("on" if value else "off") if self.kind is bool else str(value)
 
 
+THEME = Setting(
+    "theme",
+    str,
+    "system",
+    "Light or dark paper, or as the desktop has it.",
+    "Colours",
+    (("system", "as the system"), ("light", "light"), ("dark", "dark")),
+)
+TEXT_SIZE = Setting(
+    "text_percent",
+    int,
+    100,
+    "Size of all text, of the system's own. In a window too small for it the places share tabs.",
+    "Text size",
+    tuple((percent, f"{percent} %") for percent in TEXT_PERCENTS),
+)
+MOTION = Setting(
+    "reduced_motion",
+    str,
+    "system",
+    "With reduced motion no mode moves by itself; arrows tell how it moves. The play button still moves one.",
+    "Reduced motion",
+    (("system", "as the system"), ("on", "on"), ("off", "off")),
+)
 AUTOMATIC = Setting(
     "find_modes_automatically",
     bool,
     True,
-    "Find modes after each edit, to 300 coordinates.",
+    "Find the modes after each edit, in models of up to 300 coordinates. Verdicts need none.",
+    "Find modes automatically",
 )
-THEME = Setting(
-    "theme", str, "system", "Light or dark, or as the system has it.", ("system", "light", "dark")
+DISCS = Setting(
+    "show_discs", bool, True, "Gershgorin bounds stand on the frequency scale.", "Gershgorin bounds shown"
 )
-TEXT_SIZE = Setting("text_percent", int, 100, "Size of all text, of the system's own.", TEXT_PERCENTS)
+UNITS = Setting(
+    "units_shown",
+    str,
+    "file",
+    "Units in which values are shown beside what was typed. What was typed is never changed.",
+    "Units shown",
+    (
+        ("file", "as the file says, else SI"),
+        ("SI", "SI"),
+        ("mm-t", "millimetre and tonne"),
+        ("inch-pound", "inch and pound"),
+    ),
+)
 MOVE = Setting("modes_move", bool, True, "The chosen mode moves; off shows it at its largest.")
-AMPLITUDE = Setting("amplitude_percent", int, 60, "How far the chosen mode moves on the sheet.")
-DISCS = Setting("show_discs", bool, True, "Gershgorin bounds stand on the frequency scale.")
+AMPLITUDE = Setting(
+    "amplitude_percent", int, 60, "How far the chosen mode moves on the sheet.", low=5, high=100
+)
+SPEED = Setting("speed_steps", int, 0, "How fast it moves, in tenths of a doubling.", low=-20, high=20)
 GEOMETRY = Setting("window_geometry", QByteArray, QByteArray(), "Where the window stood.")
 FOLDER = Setting("folder", str, "", "Folder of the last file.")
 RECENT = Setting("recent_files", list, [], "Files opened last, latest first.")
 
-ALL = (AUTOMATIC, THEME, TEXT_SIZE, MOVE, AMPLITUDE, DISCS, GEOMETRY, FOLDER, RECENT)
+ALL = (
+    THEME,
+    TEXT_SIZE,
+    MOTION,
+    AUTOMATIC,
+    DISCS,
+    UNITS,
+    MOVE,
+    AMPLITUDE,
+    SPEED,
+    GEOMETRY,
+    FOLDER,
+    RECENT,
+)
+ASKED = tuple(setting for setting in ALL if setting.label)
 
 _READ: dict[type, Callable[[Any], Any]] = {
     bool: lambda kept: kept if isinstance(kept, bool) else str(kept).lower() == "true",
@@ -76,13 +158,23 @@ class Settings:
             value = _READ[setting.kind](kept)
         except (TypeError, ValueError):
             return setting.default
-        return value if not setting.choices or value in setting.choices else setting.default
+        return value if setting.allows(value) else setting.default
 
     def set(self, setting: Setting, value: Any) -> None:
         """Keep a value; one that is not allowed is an error of the program."""
-        if setting.choices and value not in setting.choices:
-            raise ValueError(f"{setting.name} cannot be {value!r}; it is one of {setting.choices}")
+        if not setting.allows(value):
+            raise ValueError(f"{setting.name} cannot be {value!r}; {setting.text}")
         self._store.setValue(setting.name, value)
+
+
+def settings_text() -> str:
+    """Return what every setting does, in markdown, for the help."""
+    lines = ["# Settings", ""]
+    for setting in ASKED:
+        values = " / ".join(name for _, name in setting.choices) or "on / off"
+        lines.append(f"**{setting.label}** ({values}; at first {setting.spoken(setting.default)})  ")
+        lines += [setting.text, ""]
+    return "\n".join(lines)
 
 
 def kept_settings() -> Settings:

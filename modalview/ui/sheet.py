@@ -1,16 +1,16 @@
 """The sheet: the model as an engineering drawing, on which the chosen mode moves."""
 
-import math
 from dataclasses import replace
 from time import perf_counter
 from typing import Any
 
-from PySide6.QtCore import QElapsedTimer, QPoint, QPointF, Qt, QTimer, Signal
+from PySide6.QtCore import QPoint, QPointF, Qt, QTimer, Signal
 from PySide6.QtGui import QKeyEvent, QMouseEvent, QPainter, QPaintEvent, QPixmap, QResizeEvent, QWheelEvent
 from PySide6.QtWidgets import QSizePolicy, QWidget
 
 from modalview.model.parts import Model
 from modalview.ui.canvas import paint_drawing, painted
+from modalview.ui.swing import Swing
 from modalview.ui.theme import LIGHT, Theme
 
 FRAME_MS = 16
@@ -18,8 +18,6 @@ FRAME_MS = 16
 SOON_MS, LATER_MS = 15, 250
 # Painting a frame takes at most this share of the time.
 MOST_SHARE = 0.35
-# Real frequencies are too fast to follow; every mode swings once in this time.
-SWING_S = 1.6
 # One notch of a wheel (120 units of an eighth of a degree) enlarges by so much.
 ZOOM_PER_NOTCH = 1.2
 _PAN_STEP_PX = 40
@@ -30,8 +28,9 @@ class Sheet(QWidget):
 
     part_chosen = Signal(str)
 
-    def __init__(self, parent: QWidget | None = None) -> None:
+    def __init__(self, swing: Swing, parent: QWidget | None = None) -> None:
         super().__init__(parent)
+        self._swing = swing
         self._model: Model | None = None
         self._view: Any = None
         self._geometry: Any = None
@@ -42,12 +41,11 @@ class Sheet(QWidget):
         self._theme: Theme = LIGHT
         self._text_scale = 1.0
         self._selected: str | None = None
-        self._moving = True
         self.amplitude = 0.6
-        self._phase_s = 0.0
-        self._clock = QElapsedTimer()
         self._timer = QTimer(self, interval=FRAME_MS, timerType=Qt.TimerType.PreciseTimer)
-        self._timer.timeout.connect(self._on_frame)
+        self._timer.timeout.connect(self.update)
+        swing.running_changed.connect(self._run)
+        swing.moved.connect(self.update)
         # The verdict of an edit comes first: laying out a large sheet takes longer than counting.
         self._later = QTimer(self, singleShot=True)
         self._later.timeout.connect(self._rebuild)
@@ -92,16 +90,15 @@ class Sheet(QWidget):
             self._mode = mode
             self._pose()
 
+    @property
+    def mode(self) -> Any:
+        """The mode that moves, or None."""
+        return self._mode
+
     def set_theme(self, theme: Theme, text_scale: float) -> None:
         """Repaint in other colours and text size."""
         self._theme, self._text_scale = theme, text_scale
         self._rebuild()
-
-    def set_moving(self, moving: bool) -> None:  # noqa: FBT001  (a slot)
-        """Move, or stand still at the largest motion with arrows."""
-        self._moving = moving
-        self._run()
-        self.update()
 
     def set_amplitude(self, share: float) -> None:
         """Set how far the mode moves, 0..1."""
@@ -156,16 +153,11 @@ class Sheet(QWidget):
         self.update()
 
     def _run(self) -> None:
-        run = self._moving and self._posed is not None and self.isVisible()
+        run = self._swing.running and self._posed is not None and self.isVisible()
         if run and not self._timer.isActive():
-            self._clock.start()
             self._timer.start()
         elif not run:
             self._timer.stop()
-
-    def _on_frame(self) -> None:
-        self._phase_s += self._clock.restart() / 1000
-        self.update()
 
     def _rest_pixmap(self) -> QPixmap:
         from modalview.drawing import motion, sheet  # noqa: PLC0415  (see above)
@@ -198,10 +190,10 @@ class Sheet(QWidget):
         """Return the frame of this moment: moving, or frozen with arrows."""
         from modalview.drawing import motion  # noqa: PLC0415  (see above)
 
-        if not self._moving:
-            return motion.frozen(self._geometry, self._posed, self.amplitude)
-        swing = math.sin(2 * math.pi * self._phase_s / SWING_S)
-        return motion.frame(self._geometry, self._posed, self.amplitude * swing)
+        fading = getattr(self._mode, "overdamped", False)
+        factor = self._swing.fading(self.amplitude) if fading else self._swing.factor(self.amplitude)
+        show = motion.frame if self._swing.running else motion.frozen
+        return show(self._geometry, self._posed, factor)
 
     # What a person does
 

@@ -26,7 +26,8 @@ def main(arguments: Sequence[str] | None = None) -> int:
         theme="dark" if asked.dark else "light",
         mode=asked.mode,
         automatic=not asked.no_auto,
-        values=asked.values,
+        page=asked.page,
+        why=asked.why,
         text_percent=asked.text,
     )
     try:
@@ -37,6 +38,9 @@ def main(arguments: Sequence[str] | None = None) -> int:
     return 0
 
 
+_PAGES = ("sheet", "modes", "damped", "plane", "values")
+
+
 def _parser() -> argparse.ArgumentParser:
     parser = argparse.ArgumentParser(prog="python -m modalview.ui.shot", description=__doc__)
     parser.add_argument("file", nargs="?", type=Path, help="a model; without one the empty window")
@@ -45,7 +49,8 @@ def _parser() -> argparse.ArgumentParser:
     parser.add_argument("--dark", action="store_true")
     parser.add_argument("--mode", type=int, help="number of the mode on the sheet")
     parser.add_argument("--no-auto", action="store_true", help="do not find modes")
-    parser.add_argument("--values", action="store_true", help="show the values under the sheet")
+    parser.add_argument("--page", choices=_PAGES, default="modes", help="what stands under the sheet")
+    parser.add_argument("--why", action="store_true", help="unfold the reasoning")
     parser.add_argument("--text", type=int, default=100, help="size of text in per cent")
     return parser
 

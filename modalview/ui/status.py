@@ -2,12 +2,12 @@
 
 import time
 
-from PySide6.QtCore import Qt, QTimer
-from PySide6.QtGui import QPainter, QPaintEvent
-from PySide6.QtWidgets import QLabel, QSizePolicy, QStatusBar, QWidget
+from PySide6.QtCore import QTimer
+from PySide6.QtWidgets import QLabel, QStatusBar
 
 from modalview.ui.analysis import Analysis
 from modalview.ui.document import Document
+from modalview.ui.elided import ElidedLabel
 
 CAUTION = "A screening aid. It does not replace local codes or a licensed engineer's review."
 _REFRESH_MS = 5000
@@ -28,27 +28,11 @@ def ago(seconds: float) -> str:
     return f"{int(seconds // 3600)} h ago"
 
 
-class _State(QLabel):
-    """Ends in dots where there is no room: the caution beside it is what stays whole."""
-
-    def __init__(self, parent: QWidget) -> None:
-        super().__init__(parent)
-        self.setSizePolicy(QSizePolicy.Policy.Ignored, QSizePolicy.Policy.Preferred)
-
-    def paintEvent(self, event: QPaintEvent) -> None:  # noqa: N802  (Qt's name)
-        """Paint as much as there is room for."""
-        del event
-        painter = QPainter(self)
-        room = self.contentsRect()
-        shown = self.fontMetrics().elidedText(self.text(), Qt.TextElideMode.ElideRight, room.width())
-        painter.drawText(room, Qt.AlignmentFlag.AlignVCenter, shown)
-
-
 class StatusLine:
     """Fills the status bar and keeps the time in it true."""
 
     def __init__(self, bar: QStatusBar) -> None:
-        self.state = _State(bar)
+        self.state = ElidedLabel(bar)
         caution = QLabel(CAUTION, bar)
         bar.addWidget(self.state, 1)
         bar.addPermanentWidget(caution)

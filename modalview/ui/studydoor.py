@@ -12,22 +12,33 @@ from modalview.units.quantities import LENGTH, MASS, STIFFNESS
 
 @dataclass(frozen=True, slots=True)
 class Study:
-    """What the worker calls: Request, look(request, previous) and solve(request, outlook)."""
+    """What the worker calls: Request, look(request, previous), solve(request, outlook).
+
+    ``damped(request, solution)`` where ``dashpots(outlook)``, and ``plane(outlook, solution, damped)``, the
+    content of the complex plane.
+    """
 
     request: Callable[..., Any]
     look: Callable[[Any, Any], Any]
     solve: Callable[[Any, Any], Any]
+    dashpots: Callable[[Any], bool]
+    damped: Callable[[Any, Any], Any]
+    plane: Callable[[Any, Any, Any], Any]
 
 
 @cache
 def load_study() -> Study:
     """Import the study; takes some tenths of a second the first time."""
-    from modalview.study import look, solve  # noqa: PLC0415  (numpy and scipy come after the first paint)
+    # numpy and scipy come after the first paint
+    from modalview.assembly.dampedterms import has_dashpots  # noqa: PLC0415
+    from modalview.drawing.complexplanecontent import plane_content  # noqa: PLC0415
+    from modalview.study import look, solve  # noqa: PLC0415
+    from modalview.study.damped import damped  # noqa: PLC0415
     from modalview.study.results import Request  # noqa: PLC0415
 
     # What loads itself on first use is loaded now, while nobody waits.
     solve(Request(_smallest()))
-    return Study(Request, look, solve)
+    return Study(Request, look, solve, lambda outlook: has_dashpots(outlook.assembly), damped, plane_content)
 
 
 def _smallest() -> Model:

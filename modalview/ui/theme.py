@@ -10,7 +10,7 @@ from PySide6.QtWidgets import QApplication
 from modalview.places import resources
 
 # Text sizes offered in the View menu, in per cent of the system's own.
-TEXT_PERCENTS = (100, 125, 150, 200)
+TEXT_PERCENTS = (100, 125, 150, 175, 200)
 
 
 @dataclass(frozen=True, slots=True)

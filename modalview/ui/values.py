@@ -56,16 +56,20 @@ class ValueRow:
     inherited: str
 
 
-def converted(si: float, quantity: Quantity) -> str:
-    """Return a value in the unit the core keeps it in; what turns is shown in hertz.
+def converted(si: float, quantity: Quantity, system: str = "SI") -> str:
+    """Return a value in a system of units; in SI in the unit the core keeps it in. What turns is in hertz.
 
     >>> converted(1.75e8, q.STIFFNESS), converted(308.923, q.SPEED), converted(0.15, q.RATIO)
     ('1.75e8 N/m', '49.167 Hz', '')
+    >>> converted(620.0, q.MASS, "inch-pound")
+    '1366.9 lb'
     """
     if quantity == q.RATIO:
         return ""
     if quantity in (q.SPEED, q.FREQUENCY):
         return show(si, q.FREQUENCY, digits=5)
+    if system != "SI":
+        return show(si, quantity, system, digits=5)
     number = significant(si, 5)
     mantissa, e, power = number.partition("e")
     if "." in mantissa:
@@ -79,23 +83,23 @@ class ValueRows:
     def __init__(self) -> None:
         self._kept: dict[Address, tuple[Any, tuple[Any, ...], tuple[ValueRow, ...]]] = {}
 
-    def of(self, model: Model) -> list[ValueRow]:
+    def of(self, model: Model, system: str = "SI") -> list[ValueRow]:
         """Return the lines: parts in the order of the file, the model's own at the end."""
         kept, self._kept = self._kept, {}
         rows: list[ValueRow] = []
         for address, part, name, part_id in _parts(model):
-            context = (name, model.motion, model.default_tolerance)
+            context = (name, model.motion, model.default_tolerance, system)
             before = kept.get(address)
             if before is None or before[0] is not part or before[1] != context:
-                before = part, context, tuple(_rows_of(model, address, name, part_id))
+                before = part, context, tuple(_rows_of(model, address, name, part_id, system))
             self._kept[address] = before
             rows.extend(before[2])
         return rows
 
 
-def machine_rows(model: Model, machine: Machine) -> list[ValueRow]:
+def machine_rows(model: Model, machine: Machine, system: str = "SI") -> list[ValueRow]:
     """Return the lines of a machine that decide its bands: speed and margin."""
-    rows = _rows_of(model, ("machines", machine.id), machine.name or machine.id, machine.id)
+    rows = _rows_of(model, ("machines", machine.id), machine.name or machine.id, machine.id, system)
     return [row for row in rows if row.address[2] in _IN_FORM]
 
 
@@ -114,13 +118,13 @@ def _parts(model: Model) -> Iterator[tuple[Address, Any, str, str]]:
     yield (), model, "model", ""
 
 
-def _rows_of(model: Model, address: Address, part: str, part_id: str) -> Iterator[ValueRow]:
+def _rows_of(model: Model, address: Address, part: str, part_id: str, system: str) -> Iterator[ValueRow]:
     for field in editable_fields(model, address):
         if field.name not in _NOT_IN_TABLE:
-            yield _row(model, field, part, part_id)
+            yield _row(model, field, part, part_id, system)
 
 
-def _row(model: Model, field: EditableField, part: str, part_id: str) -> ValueRow:
+def _row(model: Model, field: EditableField, part: str, part_id: str, system: str) -> ValueRow:
     standing = look(model, field.address)
     si = getattr(standing, "si", None)
     known = si is not None and field.quantity is not None
@@ -130,7 +134,7 @@ def _row(model: Model, field: EditableField, part: str, part_id: str) -> ValueRo
         part_id=part_id,
         what="tolerance of the part" if field.name == "tolerance" else field.name,
         text=field.text,
-        converted=converted(si, field.quantity) if known else "",
+        converted=converted(si, field.quantity, system) if known else "",
         tolerance_address=field.tolerance_address,
         tolerance=field.tolerance,
         inherited=_inherited(model, field) if field.tolerance_address else "",

@@ -5,7 +5,6 @@ from typing import Any
 
 from PySide6.QtCore import QTimer, Signal
 from PySide6.QtGui import QCloseEvent, QDragEnterEvent, QDropEvent
-from PySide6.QtWidgets import QApplication, QStyle
 
 from modalview.ui import settings as names
 from modalview.ui.analysis import Analysis
@@ -15,12 +14,12 @@ from modalview.ui.examples import bundled_examples
 from modalview.ui.failure import error_text
 from modalview.ui.filing import Filing
 from modalview.ui.frame import Frame
-from modalview.ui.modes import evidence
+from modalview.ui.modelist import is_damped
+from modalview.ui.modes import damped_evidence, evidence
 from modalview.ui.settings import Settings
-from modalview.ui.theme import TEXT_PERCENTS
 from modalview.ui.worker import Worker
 
-_COLOURS = {"As the system": "system", "Light": "light", "Dark": "dark"}
+_TOLD_MS = 6000
 
 
 class Window(Frame):
@@ -46,14 +45,21 @@ class Window(Frame):
         self.document.saved.connect(self.on_saved)
         self.analysis.outlook_changed.connect(self.show_known)
         self.analysis.solution_changed.connect(self.show_modes)
+        self.analysis.damped_changed.connect(self.show_damped)
         self.analysis.busy_changed.connect(self.show_busy)
         self.analysis.failed.connect(self.on_failed)
+        self.banner.why_asked.connect(self.on_why)
+        self.reasons.folded.connect(lambda: self.banner.why.setChecked(False))
         self.banner.find_asked.connect(self.on_find)
         self.banner.cancel_asked.connect(self.analysis.cancel)
         self.modes.mode_chosen.connect(self.on_mode_chosen)
+        self.damped.mode_chosen.connect(self.on_mode_chosen)
+        self.below.shown.connect(self.on_page_shown)
         self.parts.part_chosen.connect(self.sheet.select)
+        self.parts.told.connect(lambda words: self.statusBar().showMessage(words, _TOLD_MS))
         self.sheet.part_chosen.connect(self.on_part_chosen)
         self.play_bar.moving_changed.connect(self.on_move)
+        self.play_bar.speed_changed.connect(self.on_speed)
         self.play_bar.amplitude_changed.connect(self.on_amplitude)
         self.welcome.open_asked.connect(self.on_open)
         self.welcome.example_chosen.connect(lambda path: self.filing.open(path, example=True))
@@ -68,12 +74,10 @@ class Window(Frame):
         actions["on_automatic"].setChecked(self.analysis.automatic)
         actions["on_discs"].setChecked(get(names.DISCS))
         self.scale.discs.setChecked(get(names.DISCS))
-        self.play_bar.slider.setValue(get(names.AMPLITUDE))
+        self.play_bar.amplitude.setValue(get(names.AMPLITUDE))
+        self.play_bar.speed.setValue(get(names.SPEED))
         self.sheet.set_amplitude(get(names.AMPLITUDE) / 100)
-        self._move(get(names.MOVE) and not _motion_unwanted())
-        self.menus.offer("themes", _COLOURS, get(names.THEME), self.on_theme)
-        sizes = {f"{percent} %": percent for percent in TEXT_PERCENTS}
-        self.menus.offer("text_sizes", sizes, get(names.TEXT_SIZE), self.on_text_size)
+        self._move(self.motion_wanted())
         if not get(names.GEOMETRY).isEmpty():
             self.restoreGeometry(get(names.GEOMETRY))
         self.apply_theme()
@@ -114,9 +118,20 @@ class Window(Frame):
     def _show_model(self, *, anew: bool) -> None:
         model = self.document.model
         self.sheet.show_model(model, fit=anew)
-        self.parts.show_model(model, anew=anew)
-        self.results.show_model(model)
+        self.parts.show_model(model, anew=anew, system=self._system())
+        self.results.show_model(model, self._system())
         self.analysis.follow(model)
+
+    def _system(self) -> str:
+        """Return the system of units that values are shown in."""
+        chosen = self._settings.get(names.UNITS)
+        return (self.document.model.units or "SI") if chosen == "file" else chosen
+
+    def show_units(self) -> None:
+        """Show converted values in the units chosen."""
+        if self.document.model is not None:
+            self.parts.show_model(self.document.model, anew=False, system=self._system())
+            self.results.show_model(self.document.model, self._system())
 
     def _show_title(self, checked: str, freedoms: int) -> None:
         from modalview.drawing import furniture  # noqa: PLC0415  (numpy comes after the first paint)
@@ -137,6 +152,7 @@ class Window(Frame):
         if outlook is not None:
             self._show_title(str(outlook.verdict or "nothing to check"), outlook.assembly.pencil().n)
         self.banner.show_analysis(self.analysis)
+        self.reasons.show_known(outlook, solution)
         if self.analysis.solution is None:
             self.modes.show_analysis(self.analysis)
         self.results.show_results()
@@ -146,21 +162,50 @@ class Window(Frame):
     def show_modes(self) -> None:
         """Show the modes found, and mark those of an older model."""
         self.modes.show_analysis(self.analysis)
-        self.proof.setText(evidence(self.analysis))
-        self.proof.setToolTip("\n".join(self.analysis.solution.evidence) if self.analysis.solution else "")
+        self._show_proof()
         self._show_play_bar()
         if self.analysis.looking:
             self.banner.show_analysis(self.analysis)
         else:
             self.show_known()
 
+    def show_damped(self) -> None:
+        """Show damped modes and complex plane, and which of them there are."""
+        analysis = self.analysis
+        there = analysis.damped is not None
+        if not there and self.below.current() == "damped":
+            self.below.show_page("modes")
+        self.below.offer("damped", there=there)
+        self.damped.show_analysis(analysis)
+        self.plane.canvas.show_content(analysis.plane, analysis.plane_why)
+        if self.below.current() == "damped":
+            self.on_page_shown("damped")
+
+    def on_page_shown(self, name: str) -> None:
+        """Let the sheet follow the row of modes that is in sight."""
+        rows = {"modes": self.modes.row, "damped": self.damped.row}
+        if name in rows:
+            self.on_mode_chosen(rows[name].chosen())
+        self._show_proof()
+
+    def _show_proof(self) -> None:
+        damped = self.below.current() == "damped" and self.analysis.damped is not None
+        self.proof.setText(damped_evidence(self.analysis) if damped else evidence(self.analysis))
+        known = self.analysis.damped if damped else self.analysis.solution
+        more = (*known.evidence, *getattr(known, "notes", ())) if known is not None else ()
+        self.proof.setToolTip("\n".join(more))
+
     def on_mode_chosen(self, mode: Any) -> None:
         """Move the chosen mode on the sheet."""
+        if self.sender() is self.modes and self.below.current() == "damped":
+            return  # new natural modes came in while a damped one is shown
         self.sheet.show_mode(mode)
         self._show_play_bar()
 
     def _show_play_bar(self) -> None:
-        self.play_bar.show_mode(self.modes.row.chosen(), current=self.analysis.solution_current)
+        damped = self.sheet.mode is not None and is_damped(self.sheet.mode)
+        current = self.analysis.damped_current if damped else self.analysis.solution_current
+        self.play_bar.show_mode(self.sheet.mode, current=current)
 
     def show_busy(self) -> None:
         """Show progress while modes are being found."""
@@ -200,15 +245,27 @@ class Window(Frame):
 
     def on_next_mode(self) -> None:
         """Choose the next mode."""
-        self.modes.row.step(1)
+        self._row().step(1)
 
     def on_previous_mode(self) -> None:
         """Choose the previous mode."""
-        self.modes.row.step(-1)
+        self._row().step(-1)
+
+    def _row(self) -> Any:
+        return self.damped.row if self.below.current() == "damped" else self.modes.row
+
+    def on_copy(self) -> None:
+        """Copy what is marked in the values."""
+        self.parts.copy()
+
+    def on_paste(self) -> None:
+        """Paste into the values, from the marked cell on."""
+        self.parts.paste()
 
     def on_part_chosen(self, part: str) -> None:
         """Show the values of the part that was chosen on the sheet."""
-        self.tabs.setCurrentIndex(1)
+        if not self.below.has("sheet"):
+            self.below.show_page("values")
         self.parts.choose_part(part)
 
     def _fill_examples(self) -> None:
@@ -261,9 +318,3 @@ class Window(Frame):
     def _close_unasked(self) -> None:
         self._may_close = True
         QTimer.singleShot(0, self.close)
-
-
-def _motion_unwanted() -> bool:
-    """Whether the desktop asks for no animation."""
-    hint = QStyle.StyleHint.SH_Widget_Animation_Duration
-    return QApplication.style().styleHint(hint) == 0

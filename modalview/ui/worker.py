@@ -19,6 +19,8 @@ from modalview.ui.studydoor import Study, load_study
 # Models of at most so many coordinates find their modes after each edit, unless switched off: below, all
 # modes take a few hundredths of a second.
 SMALL_MODEL = 300
+# Regions of the roots need singular values of a dense matrix: to this size, less than a second.
+PLANE_LIMIT = 400
 
 
 class Find(Enum):
@@ -46,6 +48,7 @@ class Step(Enum):
     FINDING = "the solve begins (nothing)"
     PROGRESSED = "the solve goes on (what is done, share done)"
     SOLVED = "modes found (Solution)"
+    DAMPED = "damped modes and complex plane (DampedSolution or None, content or None, why not)"
     REFUSED = "the model cannot be studied (KeepclearError)"
     FAILED = "an error of the program (Exception)"
     STOPPED = "the person stopped it (nothing)"
@@ -107,14 +110,35 @@ class _Desk(QObject):
         )
         outlook = self._previous = study.look(request, self._previous)
         self._answer(order, Step.LOOKED, outlook)
+        found = damped = None
         small = outlook.assembly.pencil().n <= SMALL_MODEL
         if order.find is Find.ALWAYS or (order.find is Find.IF_SMALL and small):
             self._answer(order, Step.FINDING)
-            if outlook.assembly.pencil().n > LARGE_MODEL:
-                found = self._apart.solve(outlook, order.stop.is_set, request.progress)
-            else:
-                found = study.solve(request, outlook)
+            found, damped = self._solve(study, request, outlook)
             self._answer(order, Step.SOLVED, found)
+        if not order.stop.is_set():
+            self._answer(order, Step.DAMPED, _plane(study, outlook, found, damped))
+
+    def _solve(self, study: Study, request: Any, outlook: Any) -> tuple[Any, Any]:
+        """Return the modes, and the damped ones where there are dashpots."""
+        dashpots = study.dashpots(outlook)
+        # A state matrix has twice the size and no symmetry: eight times the work, or more.
+        if outlook.assembly.pencil().n > (LARGE_MODEL // 4 if dashpots else LARGE_MODEL):
+            return self._apart.solve(outlook, request.cancelled, request.progress)
+        found = study.solve(request, outlook)
+        return found, study.damped(request, found) if dashpots else None
+
+
+def _plane(study: Study, outlook: Any, found: Any, damped: Any) -> tuple[Any, Any, str]:
+    """Return damped modes, content of the complex plane, and why there is none."""
+    number = outlook.assembly.pencil().n
+    if study.dashpots(outlook) and number > PLANE_LIMIT:
+        return (
+            damped,
+            None,
+            f"The regions of the roots are drawn to {PLANE_LIMIT} coordinates; this has {number}.",
+        )
+    return damped, study.plane(outlook, found, damped), ""
 
 
 class Worker(QObject):

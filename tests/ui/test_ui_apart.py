@@ -67,6 +67,8 @@ def test_the_other_process_sends_progress_and_then_what_it_found():
     *before, (kind, found) = answers_of_the_other_process(read_model(PUMP))
     assert {kind for kind, _ in before} <= {"progress"}
     assert kind == "found"
+    found, damped = found
+    assert damped is None
     assert found.outlook is None
     assert found.modes[0].frequency_hz == pytest.approx(51.26, abs=0.01)
 

@@ -16,6 +16,7 @@ from PySide6.QtWidgets import (
 )
 
 from modalview.store import read_model
+from modalview.ui import settings as names
 from modalview.ui.dialogs import TextDialog
 from modalview.ui.examples import bundled_examples
 
@@ -123,7 +124,7 @@ def test_a_chosen_mode_moves_on_the_sheet_and_frozen_it_stands_still(pump):
     frozen = pump.sheet.grab().toImage()
     pump.on_move(True)
     assert pump.sheet._timer.isActive()
-    pump.sheet._phase_s = 0.9
+    pump.swing.put(2.0)
     assert pump.sheet.grab().toImage() != frozen
     pump.on_move(False)
     assert not pump.sheet._timer.isActive()
@@ -233,14 +234,14 @@ def test_a_dropped_file_is_opened(window, qtbot):
 def test_a_part_chosen_on_the_sheet_shows_its_values(pump):
     box = pump.sheet._geometry.boxes[1]
     pump.sheet._choose(QPointF((box[0] + box[2]) / 2, (box[1] + box[3]) / 2))
-    assert pump.tabs.currentIndex() == 1
+    assert pump.below.current() == "values"
     assert pump.parts.lines.rows[pump.parts.currentIndex().row()].part_id == "pump"
 
 
 def test_every_place_is_painted_dark_and_at_large_text(pump):
     light = pump.grab().toImage()
-    pump.on_text_size(200)
-    pump.on_theme("dark")
+    pump.on_setting(names.TEXT_SIZE, 200)
+    pump.on_setting(names.THEME, "dark")
     dark = pump.grab().toImage()
     paper = pump.sheet.mapTo(pump, pump.sheet.rect().bottomLeft()) + QPoint(3, -3)
     assert light.pixelColor(paper).lightness() > 200

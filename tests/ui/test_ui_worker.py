@@ -22,6 +22,7 @@ class Bench:
         self.go, self.solving = Event(), Event()
         self.error: Exception | None = None
         self.coordinates = 3
+        self.dashpots = False
 
     def request(self, model, **more):
         return SimpleNamespace(model=model, **more)
@@ -41,6 +42,16 @@ class Bench:
                 raise CancelledError("stopped")
         return SimpleNamespace(outlook=outlook, modes=())
 
+    def study(self):
+        return Study(
+            self.request,
+            self.look,
+            self.solve,
+            dashpots=lambda _outlook: self.dashpots,
+            damped=lambda _request, found: SimpleNamespace(outlook=found.outlook),
+            plane=lambda _outlook, _found, _damped: "plane",
+        )
+
 
 @pytest.fixture
 def bench():
@@ -50,7 +61,7 @@ def bench():
 @pytest.fixture
 def worker(qapp, bench):
     del qapp
-    made = Worker(load=lambda: Study(bench.request, bench.look, bench.solve))
+    made = Worker(load=bench.study)
     made.start()
     yield made
     made.close()
@@ -71,14 +82,14 @@ def steps(answers):
 def test_an_order_is_looked_at_and_a_small_model_solved(worker, bench, answers, qtbot):
     bench.go.set()
     worker.order(FIRST, Find.IF_SMALL)
-    qtbot.waitUntil(lambda: Step.SOLVED in steps(answers))
-    assert steps(answers) == [Step.LOOKED, Step.FINDING, Step.PROGRESSED, Step.SOLVED]
+    qtbot.waitUntil(lambda: Step.DAMPED in steps(answers))
+    assert steps(answers) == [Step.LOOKED, Step.FINDING, Step.PROGRESSED, Step.SOLVED, Step.DAMPED]
 
 
 def test_a_model_that_is_not_small_is_solved_only_when_asked(worker, bench, answers, qtbot):
     bench.go.set()
     bench.coordinates = 301
-    elsewhere = SimpleNamespace(solve=lambda outlook, *_: outlook, close=lambda: None)
+    elsewhere = SimpleNamespace(solve=lambda outlook, *_: (outlook, None), close=lambda: None)
     worker._desk._apart = elsewhere
     worker.order(FIRST, Find.IF_SMALL)
     qtbot.waitUntil(lambda: Step.LOOKED in steps(answers))
@@ -91,7 +102,7 @@ def test_answers_to_an_older_order_are_dropped_and_its_solve_is_stopped(worker, 
     worker.order(FIRST, Find.ALWAYS)
     qtbot.waitUntil(bench.solving.is_set)
     worker.order(SECOND, Find.NEVER)
-    qtbot.waitUntil(lambda: answers and answers[-1].number == 2)
+    qtbot.waitUntil(lambda: bool(answers) and answers[-1].number == 2 and answers[-1].step is Step.LOOKED)
     assert Step.SOLVED not in steps(answers)
     assert answers[-1].content.request.model is SECOND
 
