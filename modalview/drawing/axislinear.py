@@ -17,7 +17,7 @@ def round_ticks(low: float, high: float, apart: float) -> tuple[float, ...]:
     power = 10.0 ** math.floor(math.log10(apart))
     step = next(one * power for one in (*_STEPS, 10.0) if one * power >= apart * (1 - 1e-9))
     first, last = math.ceil(low / step - 1e-9), math.floor(high / step + 1e-9)
-    return tuple(float(f"{index * step:.6g}") + 0.0 for index in range(first, last + 1))
+    return tuple(float(f"{index * step:.12g}") + 0.0 for index in range(first, last + 1))
 
 
 def tick_text(value: float) -> str:

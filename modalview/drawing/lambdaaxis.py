@@ -104,7 +104,8 @@ def _ticks(frame: _Frame, top: float, bottom: float) -> tuple[Item, ...]:
     )
     items.append(Text(frame.left, 12 * text_scale, "Hz", Role.INK, small, bold=True))
     highest = float(np.sqrt(frame.high)) / RAD_PER_HZ if frame.high > 0 else 0.0
-    free = frame.x(0.0) - 1e-9
+    unit = text_width("Hz", small, bold=True, text_scale=text_scale)
+    free = max(frame.x(0.0) - 1e-9, frame.left + unit + 6 * text_scale)
     for hz in round_ticks(0.0, highest, highest / 40):
         place = frame.x((RAD_PER_HZ * hz) ** 2)
         text = tick_text(hz)
