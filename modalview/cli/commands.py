@@ -8,7 +8,7 @@ from pathlib import Path
 from modalview.cli import documents, imports, matrices, texts
 from modalview.cli.damped import damped_document, damped_text
 from modalview.cli.printing import OK, UNUSABLE, progress, say, say_json, verdict_code
-from modalview.errors import KeepclearError
+from modalview.errors import KeepclearError, UsageError
 from modalview.model.parts import Model
 from modalview.store import read_model
 from modalview.study import Request, Solution, look, solve
@@ -50,12 +50,16 @@ def run_bounds(words: argparse.Namespace) -> int:
 
 def _prepare_modes(parser: argparse.ArgumentParser) -> None:
     _prepare_file(parser)
+    parser.add_argument("--near", metavar='"1480 rpm"', help="only the modes nearest to this frequency")
+    parser.add_argument("--count", type=int, metavar="6", help="how many of them (default: 6)")
     matrices.add_words(parser)
     parser.set_defaults(run=matrices.either(run_modes, matrices.run_modes))
 
 
 def run_modes(words: argparse.Namespace) -> int:
     """Print the modes."""
+    if words.near is not None or words.count is not None:
+        raise UsageError("--near and --count go with --stiffness; of a .keepclear file all modes are found")
     path, model = _file(words)
     solution = _solved(model)
     damping = damped(Request(model, progress=progress), solution)

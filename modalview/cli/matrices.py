@@ -8,7 +8,7 @@ from pathlib import Path
 from typing import Any
 
 from modalview.cli import documents, texts
-from modalview.cli.matrices_document import modes_document
+from modalview.cli.matrices_document import modes_document, near_document
 from modalview.cli.printing import OK, progress, say, say_json, verdict_code
 from modalview.errors import UnitError, UsageError
 from modalview.model.parts import Excitation, Machine, Model, SpeedRange
@@ -16,13 +16,16 @@ from modalview.model.rules import faults
 from modalview.model.values import Entry
 from modalview.store.matrices import read_pair
 from modalview.study import MatrixRequest, look_at_matrices, solve_matrices
-from modalview.study.matrices import require_modes
+from modalview.study.completed import RAD_PER_HZ
+from modalview.study.matrices import require_modes, solve_matrices_near
 from modalview.units import quantities as q
 from modalview.units.quantities import Quantity
 
 Run = Callable[[argparse.Namespace], int]
 
 MACHINE = "machine"
+# Modes near a frequency, where their number is not given.
+NEAR = 6
 _PLAIN = re.compile(r"[+-]?(\d{1,9}\.?\d{0,9}|\.\d{1,9})", re.ASCII)
 
 
@@ -104,10 +107,24 @@ def run_bounds(words: argparse.Namespace) -> int:
 
 
 def run_modes(words: argparse.Namespace) -> int:
-    """Print the modes of matrices."""
+    """Print the modes of matrices, all or those near a frequency."""
+    if words.near is not None:
+        return _run_near(words)
+    if words.count is not None:
+        raise UsageError("--count goes with --near: how many modes near that frequency")
     solution = solve_matrices(request_of(words))
     raw = require_modes(solution)
     _print(words, lambda: modes_document(words.stiffness, solution, raw), lambda: texts.modes_text(solution))
+    return OK
+
+
+def _run_near(words: argparse.Namespace) -> int:
+    frequency = _entry("near", words.near, q.FREQUENCY).si / RAD_PER_HZ
+    count = NEAR if words.count is None else words.count
+    request = request_of(words)
+    solution, found = solve_matrices_near(request, frequency, count)
+    path = words.stiffness
+    _print(words, lambda: near_document(path, solution, found), lambda: texts.modes_text(solution))
     return OK
 
 

@@ -3,11 +3,11 @@
 from modalview.study.look import look
 from modalview.study.matrices import (
     MatrixOutlook,
-    MatrixRequest,
     MatrixSolution,
     look_at_matrices,
     solve_matrices,
 )
+from modalview.study.matrices_request import MatrixRequest
 from modalview.study.results import FoundMode, Interval, Outlook, Request, Share, Solution
 from modalview.study.solve import solve
 

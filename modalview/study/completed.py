@@ -25,7 +25,7 @@ def completed(
     check : Check
         Proven by counts.
     modes : sequence of FoundMode
-        All of them, so that a mode's number is its place.
+        All of them, or at least those nearest to the excitation on either side.
     drives : callable
         Tells how strongly the excitation drives the modes of these numbers.
     """
@@ -42,7 +42,8 @@ def completed(
     deciding = check.deciding_case
     if deciding is not None and reaching:
         # Both cases may bring a mode in: name the one of the mode that comes nearest.
-        deciding = "stiff-light" if modes[worst[0] - 1].frequency_hz < excitation[0] else "soft-heavy"
+        mode = next(mode for mode in elastic if mode.number == worst[0])
+        deciding = "stiff-light" if mode.frequency_hz < excitation[0] else "soft-heavy"
     return replace(
         check,
         nearest_mode=now[0],

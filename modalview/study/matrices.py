@@ -1,30 +1,30 @@
 """Matrices of others as a model: bounds, modes and verdicts without terms."""
 
 import math
-from collections.abc import Callable, Sequence
+from collections.abc import Sequence
 from dataclasses import dataclass
 from time import perf_counter
 
-import numpy as np
 import scipy.sparse as sp
 
 from modalview.assembly.pencil import Pencil, pencil_of_matrices
 from modalview.bounds.bands import Cases
 from modalview.bounds.before import Bounds, before_solve
 from modalview.eigen.modes import Modes
+from modalview.eigen.near import NearModes
 from modalview.eigen.solve import LARGEST, find_modes
 from modalview.errors import CancelledError, InputError
 from modalview.factor.parts import PencilParts
-from modalview.factor.rounding import gamma
 from modalview.factor.shifted import ShiftedPencil, shifted_pencil
-from modalview.model.parts import Machine, Model, Motion
+from modalview.model.parts import Machine
 from modalview.resonance.bands import bands, excitation_label
-from modalview.resonance.results import Check, ModeDrive, Verdict
+from modalview.resonance.results import Check, Verdict
 from modalview.resonance.verdict import Exactness, judge, worst
-from modalview.store.matrices import MatrixPair
-from modalview.study.completed import ELASTIC, RIGID, UNSTABLE, completed
+from modalview.study.completed import completed
+from modalview.study.matrices_near import completed_near, modes_near
+from modalview.study.matrices_request import MatrixRequest, found_modes, unknown_drives
 from modalview.study.matrices_sound import require_mass, require_stiffness
-from modalview.study.results import FoundMode, never
+from modalview.study.results import FoundMode
 from modalview.study.sentence import sentence
 from modalview.study.solve import evidence
 
@@ -40,48 +40,6 @@ ABSENT = (
 )
 LACKING = "matrices name no parts, so these are absent: " + "; ".join(ABSENT)
 UNITS = "SI is assumed: N/m and kg, N m/rad and kg m² (eigenvalues in rad²/s²)"
-
-
-@dataclass(frozen=True, slots=True, eq=False)
-class MatrixRequest:
-    """Matrices to be studied, and what must stay clear of their modes.
-
-    Parameters
-    ----------
-    pair : MatrixPair
-    machines : tuple of Machine
-        Speeds, orders, margins.
-    tolerance_k, tolerance_m : float
-        Share, 0 to below 1, by which the whole of K and the whole of M may lie off to either side.
-    cancelled : callable
-        Asked between steps.
-    progress : callable or None
-        Told (what is done, share done 0..1).
-    """
-
-    pair: MatrixPair
-    machines: tuple[Machine, ...] = ()
-    tolerance_k: float = 0.0
-    tolerance_m: float = 0.0
-    cancelled: Callable[[], bool] = never
-    progress: Callable[[str, float], None] | None = None
-
-    @property
-    def model(self) -> Model:
-        """A model of no part, which carries the machines."""
-        return Model(motion=Motion.SPACE, machines=self.machines)
-
-    @property
-    def toleranced(self) -> bool:
-        """Whether any value may lie off."""
-        return self.tolerance_k > 0 or self.tolerance_m > 0
-
-    @property
-    def factors(self) -> tuple[float, float]:
-        """Eigenvalues at the soft-heavy and at the stiff-light case over nominal ones, rounded outward."""
-        low = (1 - self.tolerance_k) / (1 + self.tolerance_m)
-        high = (1 + self.tolerance_k) / (1 - self.tolerance_m)
-        return (low * (1 - gamma(4)), high * (1 + gamma(4))) if self.toleranced else (1.0, 1.0)
 
 
 @dataclass(frozen=True, slots=True, eq=False)
@@ -103,7 +61,8 @@ class MatrixOutlook:
 class MatrixSolution:
     """The modes of matrices, and the checks with what they add; fields as in `Solution`.
 
-    ``raw`` is None and ``modes`` empty beyond the number of modes that are found all at once.
+    Beyond the number of modes that are found all at once ``raw`` is None, and ``modes`` are those beside the
+    excitations.
     """
 
     outlook: MatrixOutlook
@@ -168,7 +127,7 @@ def look_at_matrices(request: MatrixRequest) -> MatrixOutlook:
 
 
 def solve_matrices(request: MatrixRequest, outlook: MatrixOutlook | None = None) -> MatrixSolution:
-    """Find all modes of matrices and complete their checks; without modes beyond 6000.
+    """Find all modes of matrices and complete their checks; beyond 6000 those beside the excitations.
 
     Raises
     ------
@@ -181,13 +140,10 @@ def solve_matrices(request: MatrixRequest, outlook: MatrixOutlook | None = None)
     start = perf_counter()
     outlook = outlook or look_at_matrices(request)
     if outlook.pencil.modes > LARGEST:
-        too_many = f"{outlook.pencil.modes} modes: more than the {LARGEST} that are found all at once"
-        return MatrixSolution(
-            outlook, None, (), outlook.checks, outlook.sentence, (too_many,), perf_counter() - start
-        )
+        return _solved_near(request, outlook, start)
     raw = find_modes(outlook.pencil, cancelled=request.cancelled, progress=request.progress)
-    modes = _found(raw, request.factors)
-    checks = tuple(completed(check, modes, _unknown_drives) for check in outlook.checks)
+    modes = found_modes(raw, request.factors)
+    checks = tuple(completed(check, modes, unknown_drives) for check in outlook.checks)
     return MatrixSolution(
         outlook=outlook,
         raw=raw,
@@ -199,11 +155,74 @@ def solve_matrices(request: MatrixRequest, outlook: MatrixOutlook | None = None)
     )
 
 
+def _solved_near(request: MatrixRequest, outlook: MatrixOutlook, start: float) -> MatrixSolution:
+    """Complete the checks by the modes beside each excitation: there are too many to find all."""
+    found: dict[int, FoundMode] = {}
+    checks = []
+    for check in outlook.checks:
+        done, modes = completed_near(request, outlook.pencil, check)
+        found.update((mode.number, mode) for mode in modes)
+        checks.append(done)
+    modes = tuple(found[number] for number in sorted(found))
+    return MatrixSolution(
+        outlook=outlook,
+        raw=None,
+        modes=modes,
+        checks=tuple(checks),
+        sentence=sentence(request.model, checks, modes),
+        evidence=(f"{outlook.pencil.modes} modes: more than the {LARGEST} that are found all at once",),
+        seconds=perf_counter() - start,
+    )
+
+
+def solve_matrices_near(
+    request: MatrixRequest, frequency_hz: float, count: int
+) -> tuple[MatrixSolution, NearModes]:
+    """Find the modes nearest to a frequency, of matrices of any size; a number of 0 is undecided.
+
+    Raises
+    ------
+    FileFaultsError
+        As `look_at_matrices`.
+    InputError
+        A count or frequency out of range.
+    CancelledError, NumericalError
+    """
+    start = perf_counter()
+    outlook = look_at_matrices(request)
+    found = modes_near(request, outlook.pencil, frequency_hz, count)
+    solution = MatrixSolution(
+        outlook=outlook,
+        raw=found.near.modes,
+        modes=found.modes,
+        checks=outlook.checks,
+        sentence=outlook.sentence,
+        evidence=_near_evidence(found.near),
+        seconds=perf_counter() - start,
+    )
+    return solution, found.near
+
+
+def _near_evidence(near: NearModes) -> tuple[str, ...]:
+    low, high = (
+        math.sqrt(max(edge, 0.0)) / RAD_PER_HZ for edge in (near.certificate.low, near.certificate.high)
+    )
+    number = near.modes.number
+    place = f"{number} modes between {low:.6g} and {high:.6g} Hz"
+    proven = {
+        True: f"{place}, none missed (proven by counts)",
+        False: f"{place}; counts disagree: do not rely on this",
+        None: f"{number} modes; counts are undecided, so others may lie between, and numbers are not told",
+    }[near.modes.complete]
+    return (proven, near.modes.method, *near.modes.warnings)
+
+
 def require_modes(solution: MatrixSolution) -> Modes:
     """Return the modes found, or raise InputError where there are too many to be found all at once."""
     if solution.raw is None:
         raise InputError(
-            f"The matrices have {solution.evidence[0]}. bounds and check work by counts, without modes."
+            f"The matrices have {solution.evidence[0]}. Ask for some of them by --near and "
+            "--count; bounds and check need no more."
         )
     return solution.raw
 
@@ -269,53 +288,6 @@ def _scaled(pencil: Pencil, factor: float) -> ShiftedPencil:
         terms=1,  # scaling rounds each entry once
     )
     return shifted_pencil(parts, pencil.shifted.pattern)
-
-
-def _found(raw: Modes, factors: tuple[float, float]) -> tuple[FoundMode, ...]:
-    repeated = {i: (start, stop) for start, stop in raw.repeated for i in range(start, stop)}
-    nothing = np.zeros((0, 6))
-    nothing.setflags(write=False)
-    found = []
-    for i in range(raw.number):
-        kind = _kind(raw, i)
-        start, stop = repeated.get(i, (0, 0))
-        found.append(
-            FoundMode(
-                number=i + 1,
-                name="" if kind == ELASTIC else kind,
-                frequency_hz=float(raw.frequency_hz[i]),
-                numerical_error_hz=float(raw.numerical_error_hz[i]),
-                range_hz=_range(raw, i, factors) if kind == ELASTIC else (0.0, 0.0),
-                kind=kind,
-                repeated_with=tuple(range(start + 1, stop + 1)) if kind == ELASTIC else (),
-                strain=(),
-                kinetic=(),
-                sensitivity=(),
-                effective_mass=(),
-                motion=nothing,
-            )
-        )
-    return tuple(found)
-
-
-def _range(raw: Modes, i: int, factors: tuple[float, float]) -> tuple[float, float]:
-    """Return the frequencies at the two cases: the eigenvalue scaled, its numerical interval included."""
-    if factors == (1.0, 1.0):
-        return float(raw.frequency_hz[i]), float(raw.frequency_hz[i])
-    low = math.sqrt(max(float(raw.lower[i]), 0.0) * factors[0]) * (1 - gamma(3))
-    high = math.sqrt(max(float(raw.upper[i]), 0.0) * factors[1]) * (1 + gamma(3))
-    return low / RAD_PER_HZ, high / RAD_PER_HZ
-
-
-def _kind(raw: Modes, i: int) -> str:
-    if i < raw.unstable:
-        return UNSTABLE
-    return RIGID if i < raw.unstable + raw.rigid_body_modes else ELASTIC
-
-
-def _unknown_drives(numbers: Sequence[int]) -> tuple[ModeDrive, ...]:
-    del numbers  # a force has no place to act without parts
-    return ()
 
 
 def _not_checked(machines: Sequence[Machine]) -> tuple[str, ...]:

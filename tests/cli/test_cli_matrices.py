@@ -132,6 +132,20 @@ class TestCommands:
         code, _, err = run(capsys, "modes", *PAIR)
         assert code == 2
         assert "20 modes: more than the 10 that are found all at once" in err
+        assert "--near" in err
+
+    def test_modes_near_a_frequency(self, capsys):
+        code, found = told(capsys, "modes", *PAIR, "--near", "5.2 rad/s", "--count", "3")
+        assert code == 0
+        assert [mode["number"] for mode in found["modes"]] == [4, 5, 6]
+        assert found["complete"] is True
+        low, high = (2 * np.pi * edge for edge in found["window_hz"])
+        assert 3 < low < 4
+        assert 6 < high < 7
+        assert found["history"][-1]["relative_residual"] < 1e-9
+        _, out, _ = run(capsys, "modes", *PAIR, "--near", "5.2 rad/s", "--count", "3")
+        assert "3 modes between" in out
+        assert "none missed (proven by counts)" in out
 
 
 class TestWords:
@@ -167,6 +181,19 @@ class TestWords:
     )
     def test_words_that_do_not_fit(self, capsys, command, words, says):
         code, out, err = run(capsys, command, *words)
+        assert (code, out) == (2, "")
+        assert says in err
+
+    @pytest.mark.parametrize(
+        ("words", "says"),
+        [
+            ((*PAIR, "--count", "3"), "--count goes with --near"),
+            ((*PAIR, "--near", "fast"), "--near"),
+            ((*PAIR, "--near", "5 rad/s", "--count", "0"), "ask for 1 to"),
+        ],
+    )
+    def test_words_of_modes_near(self, capsys, words, says):
+        code, out, err = run(capsys, "modes", *words)
         assert (code, out) == (2, "")
         assert says in err
 

@@ -17,6 +17,7 @@ from modalview.model.values import Entry
 from modalview.resonance.results import Verdict
 from modalview.store.matrices import MatrixPair, read_pair
 from modalview.study import MatrixRequest, look_at_matrices, solve_matrices
+from modalview.study import matrices as study_matrices
 from modalview.study.matrices import tolerance_notes
 from modalview.units import quantities as q
 
@@ -95,6 +96,20 @@ class TestModes:
         )
         assert solution.checks[0].inside == 50
         assert solution.outlook.bounds.rigid_body_modes == 1
+
+    def test_beyond_all_at_once_checks_tell_the_same(self, monkeypatch):
+        """The modes beside each excitation are found alone, and give what all modes give."""
+        places = [truth(40)[i] * share for i in (0, 3, 17, 38, 39) for share in (0.9, 1.0, 1.001, 1.1)]
+        request = MatrixRequest(pair(chain(40)), machine(*places, margin="3 %"), tolerance_k=0.05)
+        whole = solve_matrices(request)
+        monkeypatch.setattr(study_matrices, "LARGEST", 10)
+        part = solve_matrices(request)
+        assert part.raw is None
+        for one, other in zip(part.checks, whole.checks, strict=True):
+            assert one.nearest_mode == other.nearest_mode
+            assert one.verdict is other.verdict
+            assert one.separation == pytest.approx(other.separation, rel=1e-9, abs=1e-13)
+            assert one.worst_separation == pytest.approx(other.worst_separation, rel=1e-9, abs=1e-13)
 
     def test_stopping(self):
         with pytest.raises(CancelledError):
