@@ -29,5 +29,10 @@ A small picture of a mode, in ``modepicture``:
     small = mode_geometry(model, width, height)     # once per model
     mode_picture(small, pose(small, motion), factor)
 
+The complex plane (without dashpots the axis of lambda), in ``complexplane``, ``lambdaaxis`` and ``legend``:
+
+    content = plane_content(outlook, solution=None, damped=None)  # in complexplanecontent
+    plane_drawing(content, width, height, text_scale=1.0)
+
 A file, in ``picture``: ``save_picture(drawing, path, width, height, palette.LIGHT)``.
 """

@@ -4,6 +4,7 @@ import json
 import sys
 from pathlib import Path
 
+import mpmath
 import numpy as np
 import pytest
 
@@ -184,6 +185,44 @@ def test_random_models_against_an_independent_solve(seed, joints, free):
         left = root**2 * (M @ shape) + root * (C @ shape) + K @ shape
         size = (abs(root) ** 2 * np.abs(M) + abs(root) * np.abs(C) + np.abs(K)).max()
         assert np.abs(left).max() <= 1e-11 * size
+
+
+@pytest.mark.parametrize("seed", [1, 2, 3])
+def test_the_estimate_covers_the_error_of_graded_models(seed):
+    """Against forty digits: stiffness over six decades, mass over three."""
+    rng = np.random.default_rng(seed)
+    names = ["a", "b", "c"]
+    links = [
+        made.spring(f"k{i}", name, names[i - 1] if i else "g", float(10 ** rng.uniform(2, 8)))
+        for i, name in enumerate(names)
+    ]
+    links += [
+        made.dashpot(f"c{i}", name, "g", float(10 ** rng.uniform(0, 3))) for i, name in enumerate(names)
+    ]
+    terms = made.terms_of(
+        made.line([made.mass(name, float(10 ** rng.uniform(0, 3))) for name in names], links)
+    )
+    modes = find_damped_modes(terms)
+    with mpmath.workdps(40):
+        exact = mpmath.eig(exact_companion(terms), left=False, right=False)
+        apart = [float(min(abs(mpmath.mpc(root) - one) for one in exact)) for root in modes.roots.tolist()]
+    assert np.all(apart <= modes.error_per_s)
+    assert np.all(apart <= 1e-14 * np.abs(modes.roots))
+
+
+def exact_companion(terms):
+    """[[0, 1], [-K/m, -C/m]] without rounding, from the stored terms."""
+    size = terms.inertial
+    matrix = mpmath.zeros(2 * size)
+    for i in range(size):
+        matrix[i, size + i] = 1
+    kinds = ((terms.stretching, terms.stiffness, 0), (terms.resisting, terms.damping, size))
+    for rows, values, shift in kinds:
+        for row, value in zip(rows.toarray().tolist(), values.tolist(), strict=True):
+            for i, j in np.ndindex(size, size):
+                kg = mpmath.mpf(float(terms.mass[i, i]))
+                matrix[size + i, shift + j] -= mpmath.mpf(value) * row[i] * row[j] / kg
+    return matrix
 
 
 PLANE = {

@@ -16,13 +16,13 @@ from modalview.eigen.dampedratio import (
 from modalview.errors import InputError
 
 
-@settings(derandomize=True)
+@settings(derandomize=True, max_examples=30)
 @given(st.floats(0, 0.999))
 def test_ratio_and_decrement_go_there_and_back(ratio):
     assert ratio_of_decrement(decrement_of_ratio(ratio)) == pytest.approx(ratio, rel=1e-12)
 
 
-@settings(derandomize=True)
+@settings(derandomize=True, max_examples=30)
 @given(st.floats(1e-6, 10), st.integers(1, 50))
 def test_peaks_some_cycles_apart(decrement, cycles):
     assert decrement_of_peaks(1.0, math.exp(-decrement * cycles / 50), cycles) == pytest.approx(
