@@ -8,6 +8,7 @@ from modalview.study.matrices import (
     solve_matrices,
 )
 from modalview.study.matrices_request import MatrixRequest
+from modalview.study.preview import preview
 from modalview.study.results import FoundMode, Interval, Outlook, Request, Share, Solution
 from modalview.study.solve import solve
 
@@ -23,6 +24,7 @@ __all__ = [
     "Solution",
     "look",
     "look_at_matrices",
+    "preview",
     "solve",
     "solve_matrices",
 ]
