@@ -4,6 +4,7 @@ import math
 
 # A decade is divided by one of these steps.
 _STEPS = (1.0, 2.0, 5.0)
+_RAISED = str.maketrans("-0123456789", "⁻⁰¹²³⁴⁵⁶⁷⁸⁹")
 
 
 def round_ticks(low: float, high: float, apart: float) -> tuple[float, ...]:
@@ -24,8 +25,11 @@ def tick_text(value: float) -> str:
     """Write a tick with a true minus sign and thousands apart.
 
     >>> tick_text(-24000.0), tick_text(0.5), tick_text(2e7)
-    ('−24 000', '0.5', '2e+07')
+    ('−24 000', '0.5', '2·10⁷')
     """
     size = abs(value)
     text = f"{size:,.0f}".replace(",", " ") if 1000 <= size < 1e7 else f"{size:.4g}"
+    if "e" in text:
+        figures, power = text.split("e")
+        text = f"{figures}·10{str(int(power)).translate(_RAISED)}"
     return f"−{text}" if value < 0 else text

@@ -13,7 +13,12 @@ from modalview.study.results import Outlook, Solution
 from modalview.units.show import significant
 
 RAD_PER_HZ = 2 * np.pi
-ROW_TITLES = {"rows": "by rows of M⁻¹K", "columns": "by columns of M⁻¹K", "symmetric": "of the scaled S"}
+ROW_TITLES = {
+    "rows": "Gershgorin discs by rows of M⁻¹K",
+    "columns": "Gershgorin discs by columns of M⁻¹K",
+    "symmetric": "Gershgorin discs of the scaled S",
+}
+SEPARATED = "Discs of S, each group under a scaling of its own"
 
 
 @dataclass(frozen=True, slots=True)
@@ -59,7 +64,7 @@ class LambdaRow:
     ----------
     title : str
     centres, radii : arrays (n,)
-        rad**2/s**2.
+        rad**2/s**2; empty where only the groups are known.
     groups : tuple of Group
         Discs that overlap, with the number of modes that each group holds.
     """
@@ -107,6 +112,8 @@ def plane_content(
     if regions is None:
         found = (outlook.bounds.rows, outlook.bounds.columns, outlook.bounds.symmetric)
         rows = tuple(lambda_row(ROW_TITLES[discs.kind], discs) for discs in found if discs is not None)
+        if outlook.bounds.separated:
+            rows += (LambdaRow(SEPARATED, _none(), _none(), outlook.bounds.separated),)
         return LambdaContent(rows, _none() if solution is None else solution.raw.eigenvalues)
     modes = damped.modes if damped is not None else ()
     roots = tuple(_root(mode) for mode in modes if mode.root != 0)

@@ -74,9 +74,8 @@ def lambda_drawing(
 
 
 def _range(content: LambdaContent) -> tuple[float, float]:
-    ends = [end for row in content.rows for end in (row.centres - row.radii, row.centres + row.radii)]
-    low = min(0.0, *(float(end.min()) for end in ends))
-    high = max(float(end.max()) for end in ends)
+    groups = [group for row in content.rows for group in row.groups]
+    low, high = min(0.0, *(group.low for group in groups)), max(group.high for group in groups)
     span = max(high - low, 1e-300)
     return low - PAD * span, high + PAD * span
 
@@ -135,22 +134,18 @@ def _row(frame: _Frame, row: LambdaRow, top: float, room: float, found: Floats) 
     foot = 40.0 * text_scale
     middle = top + head + (room - head - foot) / 2
     half = max((room - head - foot) / 2 - 2.0, 4.0)
-    largest = max(float(row.radii.max()), 1e-300)
-    ellipses = _ellipses(frame, row, middle, half / largest)
-    dots = np.array([[frame.x(float(c)), middle] for c in row.centres])
     reach = half + 6.0 * text_scale
     ticks = np.array([[frame.x(one), middle - reach, frame.x(one), middle + reach] for one in found.tolist()])
     ticks = ticks.reshape(-1, 4)
-    opacity = min(0.16, 0.8 / len(row.centres))
     items: list[Item] = [
-        Polygons(ellipses, Role.ACCENT, Role.ACCENT, 1.0, opacity),
+        _shapes(frame, row, middle, half),
         Lines(np.array([[frame.left, middle, frame.right, middle]]), Role.GHOST, 0.8),
         Lines(np.array([[frame.x(0.0), middle - reach, frame.x(0.0), middle + reach]]), Role.MUTED, 1.6),
-        Circles(dots, 2.2, None, Role.ACCENT, 0.0),
+        Circles(np.array([[frame.x(c), middle] for c in row.centres.tolist()]), 2.2, None, Role.ACCENT, 0.0),
         Lines(ticks, Role.BAD, 1.3),
     ]
     placed = frame.board.place(
-        (Line(f"Gershgorin discs {row.title}{_verdict(row)}", Role.INK, Size.SMALL, bold=True),),
+        (Line(f"{row.title}{_verdict(row)}", Role.INK, Size.SMALL, bold=True),),
         [Spot(frame.left, top + 8 * text_scale, 1, 0)],
     )
     items += placed
@@ -165,12 +160,19 @@ def _verdict(row: LambdaRow) -> str:
     return f": {len(row.groups)} groups apart, each with as many modes as discs"
 
 
-def _ellipses(frame: _Frame, row: LambdaRow, middle: float, up: float) -> Floats:
+def _shapes(frame: _Frame, row: LambdaRow, middle: float, half: float) -> Polygons:
+    """Return the discs as ellipses; where only groups are known, a bar for each."""
+    opacity = min(0.16, 0.8 / max(len(row.centres), 1))
+    if not row.centres.size:
+        ends = [(frame.x(group.low), frame.x(group.high)) for group in row.groups]
+        up, down = middle - half / 2, middle + half / 2
+        bars = np.array([[[a, up], [b, up], [b, down], [a, down]] for a, b in ends])
+        return Polygons(bars, Role.ACCENT, Role.ACCENT, 1.0, opacity)
     turn = np.linspace(0.0, 2 * np.pi, SIDES, endpoint=False)
     per = (frame.right - frame.left) / (frame.high - frame.low)
     x = frame.left + (row.centres[:, None] + row.radii[:, None] * np.cos(turn) - frame.low) * per
-    y = middle + up * row.radii[:, None] * np.sin(turn)
-    return np.stack([x, y], axis=-1)
+    y = middle + half * row.radii[:, None] / max(float(row.radii.max()), 1e-300) * np.sin(turn)
+    return Polygons(np.stack([x, y], axis=-1), Role.ACCENT, Role.ACCENT, 1.0, opacity)
 
 
 def _group(frame: _Frame, group: Group, y: float) -> list[Item]:
