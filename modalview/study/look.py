@@ -5,14 +5,16 @@ from time import perf_counter
 
 from modalview.assembly.assemble import Assembly, assemble
 from modalview.assembly.parameters import Case
-from modalview.bounds.bands import Cases
+from modalview.bounds.bands import Cases, Counters
 from modalview.bounds.before import before_solve
+from modalview.eigen.near_count import GapCounter
+from modalview.eigen.solve import LARGEST
 from modalview.errors import CancelledError
 from modalview.resonance.bands import bands
 from modalview.resonance.exactly import judge_exactly
 from modalview.resonance.results import Check
 from modalview.resonance.unchecked import not_checked
-from modalview.resonance.verdict import Exactness, judge, worst
+from modalview.resonance.verdict import BY_COUNTS, Exactness, Question, answer, worst
 from modalview.study.intervals import scale_intervals
 from modalview.study.results import Outlook, Request
 from modalview.study.sentence import sentence
@@ -63,12 +65,22 @@ def _checks(request: Request, assembly: Assembly) -> tuple[tuple[Check, ...], tu
     exactness = Exactness(len(assembly.exact_values), len(assembly.matter))
     if request.exact:
         return _exact_checks(request, assembly, exactness)
-    cases = Cases(*(assembly.pencil(case).shifted for case in Case))
+    counters, modes = _counters(request, assembly), assembly.pencil().modes
     found = []
     for band in bands(request.model):
         _stop_if(request)
-        found.append(judge(band, cases, exactness))
+        question = Question(band, band.nominal, band.tolerance, counters, modes, BY_COUNTS)
+        found.append(answer(question, exactness))
     return tuple(found), ()
+
+
+def _counters(request: Request, assembly: Assembly) -> Counters:
+    """Return what counts the three cases: large models where pivots do not decide, between their modes."""
+    pencils = [assembly.pencil(case) for case in Case]
+    if pencils[0].modes <= LARGEST:
+        return Cases(*(pencil.shifted for pencil in pencils)).counters()
+    made = {id(pencil): GapCounter(pencil, request.cancelled) for pencil in pencils}
+    return Counters(*(made[id(pencil)] for pencil in pencils))
 
 
 def _exact_checks(
