@@ -41,6 +41,9 @@ from modalview.model.parts import FREEDOMS, Body, Link, Model, Motion, RigidLink
 ExactForm = dict[Freedom, Fraction]
 ONE = Fraction(1)
 
+# More parts than this of which the same is to be noted share one note.
+NAMED = 4
+
 
 @dataclass(frozen=True, slots=True)
 class Coordinates:
@@ -227,13 +230,20 @@ def _locked_notes(model: Model, solved: Mapping[Freedom, ExactForm], held: Itera
 def _point_notes(model: Model) -> list[str]:
     if model.motion not in (Motion.PLANE, Motion.SPACE):
         return []
-    return [
-        f"{shown_name(body)}: no inertia is given; taken as a point mass"
+    points = [
+        shown_name(body)
         for body in model.bodies
         if body.inertia is None
         and has_inertia(body, "x")
         and (body.dof is None or any(name in body.dof for name in ROTATIONS))
     ]
+    if len(points) <= NAMED:
+        return [f"{point}: no inertia is given; taken as a point mass" for point in points]
+    return [f"{_shortened(points)}: no inertia is given; taken as point masses"]
+
+
+def _shortened(names: Sequence[str]) -> str:
+    return f"{', '.join(names[:NAMED])} and {len(names) - NAMED} more"
 
 
 def _through(form: Mapping[Freedom, Fraction], solved: Mapping[Freedom, ExactForm]) -> ExactForm:
@@ -313,11 +323,18 @@ def _unresisted(
     left_out: dict[str, list[str]] = {}
     for (part, freedom), vector in dropped:
         left_out.setdefault(part, []).append(_direction(freedom, vector))
-    notes = [
-        f"{names[part]}: its motion {', '.join(sorted(freedoms))} has no inertia and no resistance; left out"
-        for part, freedoms in left_out.items()
-    ]
+    alike: dict[str, list[str]] = {}
+    for part, freedoms in left_out.items():
+        alike.setdefault(", ".join(sorted(freedoms)), []).append(names[part])
+    notes = [note for freedoms, parts in alike.items() for note in _left_out(parts, freedoms)]
     return dropped, notes
+
+
+def _left_out(parts: Sequence[str], freedoms: str) -> list[str]:
+    why = "no inertia and no resistance; left out"
+    if len(parts) <= NAMED:
+        return [f"{part}: its motion {freedoms} has {why}" for part in parts]
+    return [f"{_shortened(parts)}: their motions {freedoms} have {why}"]
 
 
 def _direction(freedom: str, vector: ExactForm) -> str:

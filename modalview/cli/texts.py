@@ -84,7 +84,7 @@ def check_text(path: Path, solution: Solution | MatrixSolution) -> str:
     parts = [f"{path}: {verdict.upper()}", _wrapped(solution.sentence)]
     if solution.checks:
         head = ["check", "excitation", "verdict", "nearest mode", "separation", "worst"]
-        rows = [_check_row(check, solution.modes) for check in solution.checks]
+        rows = [_check_row(check, solution.modes, _no_nearest(solution)) for check in solution.checks]
         parts.append(table([head, *rows], right=frozenset({4, 5})))
         parts.append(f"{FORMULA}\n{WORST}")
         parts.append("\n".join(_wrapped(f"{c.band.label}: {c.reason}.", "  ") for c in solution.checks))
@@ -95,13 +95,18 @@ def check_text(path: Path, solution: Solution | MatrixSolution) -> str:
     return "\n\n".join(parts + _tail(outlook))
 
 
-def _check_row(check: Check, modes: Sequence[FoundMode]) -> list[str]:
+def _no_nearest(solution: Solution | MatrixSolution) -> str:
+    """Say why no mode is named: there is none, or counts did not prove which of very many it is."""
+    return "not told" if isinstance(solution, MatrixSolution) and solution.raw is None else "none"
+
+
+def _check_row(check: Check, modes: Sequence[FoundMode], missing: str) -> list[str]:
     mode = next((m for m in modes if m.number == check.nearest_mode), None)
     return [
         check.band.label,
         hz_range(*check.band.excitation),
         check.wording,
-        "none" if mode is None else f"{mode.number} at {significant(mode.frequency_hz, 4)} Hz",
+        missing if mode is None else f"{mode.number} at {significant(mode.frequency_hz, 4)} Hz",
         "" if check.separation is None else percent(check.separation),
         "" if check.worst_separation is None else percent(check.worst_separation),
     ]

@@ -2,7 +2,7 @@
 
 import math
 from collections.abc import Sequence
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 from time import perf_counter
 
 import scipy.sparse as sp
@@ -164,13 +164,18 @@ def _solved_near(request: MatrixRequest, outlook: MatrixOutlook, start: float) -
         found.update((mode.number, mode) for mode in modes)
         checks.append(done)
     modes = tuple(found[number] for number in sorted(found))
+    too_many = f"{outlook.pencil.modes} modes: more than the {LARGEST} that are found all at once"
+    untold = ", ".join(check.band.label for check in checks if check.nearest_mode is None)
+    if untold:
+        note = f"nearest mode of {untold} not told: counts do not prove which it is, among {too_many}"
+        outlook = replace(outlook, notes=(*outlook.notes, note))
     return MatrixSolution(
         outlook=outlook,
         raw=None,
         modes=modes,
         checks=tuple(checks),
         sentence=sentence(request.model, checks, modes),
-        evidence=(f"{outlook.pencil.modes} modes: more than the {LARGEST} that are found all at once",),
+        evidence=(too_many,),
         seconds=perf_counter() - start,
     )
 

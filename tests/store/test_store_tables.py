@@ -211,7 +211,12 @@ def test_points_in_space(tables):
     nodes = "".join(f"n{i},2,{x},{y},{z}\n" for i, (x, y, z) in enumerate(corners))
     springs = "".join(f"n{a},n{b},8\n" for a, b in pairs)
     paths = tables(f"node,mass_kg,x_m,y_m,z_m\n{nodes}", f"from,to,k_N/m\n{springs}")
-    raw = solve(Request(imported(paths, Motion.SPACE).model)).raw
+    solution = solve(Request(imported(paths, Motion.SPACE).model))
+    assert solution.outlook.notes[:2] == (
+        "n0, n1, n2, n3 and 2 more: no inertia is given; taken as point masses",
+        "n0, n1, n2, n3 and 2 more: their motions rx, ry, rz have no inertia and no resistance; left out",
+    )
+    raw = solution.raw
     place = np.array(corners, dtype=float)
     stiffness = np.zeros((18, 18))
     for a, b in pairs:

@@ -16,7 +16,7 @@ from modalview.model.parts import Excitation, Machine
 from modalview.model.values import Entry
 from modalview.resonance.results import Verdict
 from modalview.store.matrices import MatrixPair, read_pair
-from modalview.study import MatrixRequest, look_at_matrices, solve_matrices
+from modalview.study import MatrixRequest, look_at_matrices, matrices_near, matrices_sound, solve_matrices
 from modalview.study import matrices as study_matrices
 from modalview.study.matrices import tolerance_notes
 from modalview.units import quantities as q
@@ -115,6 +115,13 @@ class TestModes:
         with pytest.raises(CancelledError):
             look_at_matrices(MatrixRequest(pair(chain()), cancelled=lambda: True))
 
+    def test_a_nearest_mode_that_is_not_proven_is_not_told(self, monkeypatch):
+        monkeypatch.setattr(study_matrices, "LARGEST", 10)
+        monkeypatch.setattr(matrices_near, "MOST", 1)
+        solution = solve_matrices(MatrixRequest(pair(chain(40)), machine(1.0)))
+        assert solution.checks[0].nearest_mode is None
+        assert any("nearest mode of 1 Hz not told" in note for note in solution.outlook.notes)
+
 
 class TestSoundness:
     def refused(self, K, M=None):
@@ -159,6 +166,11 @@ class TestSoundness:
     def test_massless_coordinates_held_by_one_another_only(self):
         said = self.refused([[1, 0, 0], [0, 1, -1], [0, -1, 1]], np.diag([1, 0, 0]))
         assert "not positive definite (1 eigenvalue(s) not above zero" in said
+
+    def test_mass_that_couples_too_many_coordinates(self, monkeypatch):
+        monkeypatch.setattr(matrices_sound, "LARGEST_BLOCK", 1)
+        said = self.refused(np.eye(3), [[2, 1, 0], [1, 2, 0], [0, 0, 1]])
+        assert "couples 2 coordinates with one another; up to 1 can be factored" in said
 
     def test_masses_of_very_unlike_size_are_sound(self):
         look_at_matrices(MatrixRequest(pair(np.eye(3), np.diag([1e-12, 1.0, 1e3]))))
