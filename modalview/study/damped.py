@@ -10,7 +10,7 @@ import numpy.typing as npt
 
 from modalview.assembly.assemble import Assembly
 from modalview.assembly.dampedterms import DampedTerms, damped_terms, has_dashpots
-from modalview.assembly.statematrix import state_matrix
+from modalview.assembly.statematrix import LARGEST, state_matrix
 from modalview.bounds.state import StateRegions, state_regions
 from modalview.eigen.damped import find_damped_modes
 from modalview.eigen.dampedmodes import DampedModes
@@ -28,7 +28,9 @@ Array = npt.NDArray[np.float64]
 ComplexArray = npt.NDArray[np.complex128]
 
 OSCILLATING, OVERDAMPED, DECAY = "oscillating", "overdamped", "decay"
-UNDAMPED_VERDICT = "Verdicts use the undamped natural frequencies: they are the same with and without damping."
+UNDAMPED_VERDICT = (
+    "Verdicts use the undamped natural frequencies: they are the same with and without damping."
+)
 
 
 @dataclass(frozen=True, slots=True, eq=False)
@@ -120,13 +122,14 @@ def damped(request: Request, solution: Solution | None = None) -> DampedSolution
     Raises
     ------
     InputError
-        The model cannot be analysed, or is too large.
+        The model cannot be analysed.
     CancelledError
 
     Notes
     -----
     With any dashpot its state matrix is solved and damping given for the whole model is ignored. Without
-    one that damping gives every mode its ratio, in closed form.
+    one that damping gives every mode its ratio, in closed form. Of a model with too many roots none is
+    listed, and ``evidence`` says so: its undamped modes are no worse for it.
     """
     start = perf_counter()
     known = solution is not None and solution.outlook.request.model is request.model
@@ -137,8 +140,11 @@ def damped(request: Request, solution: Solution | None = None) -> DampedSolution
     if has_dashpots(outlook.assembly):
         source = "dashpots"
         terms = damped_terms(outlook.assembly)
-        raw = find_damped_modes(terms, cancelled=request.cancelled, progress=request.progress)
-        modes, evidence = _with_dashpots(outlook.assembly, terms, raw), _evidence(raw)
+        if terms.roots <= LARGEST:
+            raw = find_damped_modes(terms, cancelled=request.cancelled, progress=request.progress)
+            modes, evidence = _with_dashpots(outlook.assembly, terms, raw), _evidence(raw)
+        else:
+            evidence = (f"{terms.roots} damped roots, none listed: they are found up to {LARGEST}",)
     elif request.model.damping is not None and not has_loss_factors(request.model):
         source = "model damping"
         found = solution if solution is not None and known else solve(request, outlook)

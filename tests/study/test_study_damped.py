@@ -10,6 +10,7 @@ import pytest
 from modalview.errors import CancelledError
 from modalview.store import parse_model
 from modalview.study import Request, solve
+from modalview.study import damped as study_damped
 from modalview.study.damped import UNDAMPED_VERDICT, damped, damped_regions
 
 sys.path.insert(0, str(Path(__file__).parents[1] / "data"))
@@ -148,6 +149,13 @@ def test_a_solution_at_hand_is_used():
     model = parse_model(made.line(MASSES, SPRINGS, damping={"ratio": "2 %"}))
     solution = solve(Request(model))
     assert damped(Request(model), solution).outlook is solution.outlook
+
+
+def test_too_many_roots_do_not_take_the_modes_away(monkeypatch):
+    monkeypatch.setattr(study_damped, "LARGEST", 3)
+    result = found(MASSES, SPRINGS + LIGHT)
+    assert result.modes == ()
+    assert result.evidence == ("4 damped roots, none listed: they are found up to 3",)
 
 
 def test_cancel():
