@@ -1,13 +1,13 @@
 """The modes of matrices as JSON."""
 
-import math
 from pathlib import Path
 from typing import Any
 
 import numpy as np
 import numpy.typing as npt
 
-from modalview.cli.documents import RAD_PER_HZ, counts_document, matrices_head
+from modalview.cli.documents import counts_document, matrices_head
+from modalview.cli.near_document import near_keys
 from modalview.eigen.modes import Modes
 from modalview.eigen.near import NearModes
 from modalview.study import FoundMode, MatrixSolution
@@ -32,17 +32,8 @@ def modes_document(path: Path, solution: MatrixSolution, raw: Modes) -> dict[str
 
 
 def near_document(path: Path, solution: MatrixSolution, near: NearModes) -> dict[str, Any]:
-    """Return the modes near a frequency; ``window_hz`` holds no other mode where ``complete`` is true."""
-    low, high = near.certificate.low, near.certificate.high
-    return {
-        **modes_document(path, solution, near.modes),
-        "near_hz": math.sqrt(near.sigma) / RAD_PER_HZ,
-        "window_hz": [math.sqrt(max(edge, 0.0)) / RAD_PER_HZ for edge in (low, high)],
-        "history": [
-            {"solves": step.solves, "found": step.found, "relative_residual": step.residual}
-            for step in near.history
-        ],
-    }
+    """Return the modes near a frequency and what proves them complete."""
+    return {**modes_document(path, solution, near.modes), **near_keys(near)}
 
 
 def _mode(mode: FoundMode, shape: npt.NDArray[np.float64], raw: Modes, column: int) -> dict[str, Any]:

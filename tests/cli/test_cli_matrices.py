@@ -139,10 +139,10 @@ class TestCommands:
         assert code == 0
         assert [mode["number"] for mode in found["modes"]] == [4, 5, 6]
         assert found["complete"] is True
-        low, high = (2 * np.pi * edge for edge in found["window_hz"])
+        low, high = (2 * np.pi * found["certificate"][edge] for edge in ("low_hz", "high_hz"))
         assert 3 < low < 4
         assert 6 < high < 7
-        assert found["history"][-1]["relative_residual"] < 1e-9
+        assert found["residual_history"][-1]["relative_residual"] < 1e-9
         _, out, _ = run(capsys, "modes", *PAIR, "--near", "5.2 rad/s", "--count", "3")
         assert "3 modes between" in out
         assert "none missed (proven by counts)" in out
