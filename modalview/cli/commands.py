@@ -5,7 +5,7 @@ import sys
 from collections.abc import Callable
 from pathlib import Path
 
-from modalview.cli import documents, imports, matrices, texts
+from modalview.cli import documents, imports, matrices, near, texts
 from modalview.cli.damped import damped_document, damped_text
 from modalview.cli.printing import OK, UNUSABLE, progress, say, say_json, verdict_code
 from modalview.errors import KeepclearError, UsageError
@@ -13,6 +13,7 @@ from modalview.model.parts import Model
 from modalview.store import read_model
 from modalview.study import Request, Solution, look, solve
 from modalview.study.damped import damped
+from modalview.study.near import require_all_modes
 
 Prepare = Callable[[argparse.ArgumentParser], None]
 PICTURES = ("sheet", "scale", "mode", "plane")
@@ -52,15 +53,19 @@ def _prepare_modes(parser: argparse.ArgumentParser) -> None:
     _prepare_file(parser)
     parser.add_argument("--near", metavar='"1480 rpm"', help="only the modes nearest to this frequency")
     parser.add_argument("--count", type=int, metavar="6", help="how many of them (default: 6)")
+    parser.add_argument("--history", action="store_true", help="with --near: how the residuals fell")
     matrices.add_words(parser)
     parser.set_defaults(run=matrices.either(run_modes, matrices.run_modes))
 
 
 def run_modes(words: argparse.Namespace) -> int:
     """Print the modes."""
-    if words.near is not None or words.count is not None:
-        raise UsageError("--near and --count go with --stiffness; of a .keepclear file all modes are found")
+    if words.near is None and (words.count is not None or words.history):
+        raise UsageError("--count and --history go with --near: the modes near a frequency")
     path, model = _file(words)
+    if words.near is not None:
+        return near.run_near(words, path, model)
+    require_all_modes(model)
     solution = _solved(model)
     damping = damped(Request(model, progress=progress), solution)
     if words.json:

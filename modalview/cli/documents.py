@@ -96,7 +96,7 @@ def counts_document(raw: Modes) -> list[dict[str, Any]]:
 def _mode_document(mode: FoundMode, column: int, solution: Solution) -> dict[str, Any]:
     raw = solution.raw
     return {
-        "number": mode.number,
+        "number": mode.number or None,
         "frequency_hz": mode.frequency_hz,
         "numerical_error_hz": mode.numerical_error_hz,
         "range_hz": list(mode.range_hz),

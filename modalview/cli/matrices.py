@@ -9,6 +9,7 @@ from typing import Any
 
 from modalview.cli import documents, texts
 from modalview.cli.matrices_document import modes_document, near_document
+from modalview.cli.near_document import history_text
 from modalview.cli.printing import OK, progress, say, say_json, verdict_code
 from modalview.errors import UnitError, UsageError
 from modalview.model.parts import Excitation, Machine, Model, SpeedRange
@@ -118,13 +119,20 @@ def run_modes(words: argparse.Namespace) -> int:
     return OK
 
 
+def near_frequency(words: argparse.Namespace) -> float:
+    """Return the frequency of ``--near``, Hz."""
+    return _entry("near", words.near, q.FREQUENCY).si / RAD_PER_HZ
+
+
 def _run_near(words: argparse.Namespace) -> int:
-    frequency = _entry("near", words.near, q.FREQUENCY).si / RAD_PER_HZ
+    frequency = near_frequency(words)
     count = NEAR if words.count is None else words.count
     request = request_of(words)
     solution, found = solve_matrices_near(request, frequency, count)
     path = words.stiffness
     _print(words, lambda: near_document(path, solution, found), lambda: texts.modes_text(solution))
+    if words.history and not words.json:
+        say("\n" + history_text(found))
     return OK
 
 
