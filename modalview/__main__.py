@@ -16,7 +16,8 @@ These commands work without one:
   keepclear bounds FILE                 what is known before a solve
   keepclear modes FILE                  the natural frequencies, with tolerance ranges
   keepclear check FILE...               is every speed and order clear of every mode
-  keepclear picture FILE -o out.png     the sheet, a mode or the scale as a picture
+  keepclear picture FILE -o out.png     the sheet, a mode, the scale or the complex plane as a picture
+  keepclear import ... -o FILE          make a model of a table of nodes and a table of springs
 """
 
 
