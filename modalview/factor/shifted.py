@@ -139,7 +139,7 @@ class ShiftedPencil:
 
     def least_uncertainty(self, sigma: float) -> float:
         """Return the part of the uncertainty that needs no factorization: no count is sharper than this."""
-        return self.extents.uncertainty(sigma, np.zeros(self.n))
+        return self.extents.least(sigma)
 
 
 def shifted_pencil(parts: PencilParts, pattern: Pattern | None = None) -> ShiftedPencil:

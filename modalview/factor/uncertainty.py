@@ -24,6 +24,9 @@ Rounding = Callable[[Array], Array]
 # Power steps that sharpen a norm: two to three times sharper on large plane models, no more after two.
 REFINEMENTS = 2
 
+# Asymmetry of the factors, relative, whose square over four is below the unit roundoff.
+ASYMMETRY = 2e-8
+
 # Entries of the scaling stay above this share of the largest.
 LEAST_SCALING = 1e-3
 
@@ -48,6 +51,8 @@ class Extents:
         Rounding of sigma M times ``reach``, per unit of sigma.
     margin : float
         No eigenvalue of the massless block, scaled to a unit diagonal, lies below.
+    pressed : pair of arrays (modes,)
+        ``formed`` and ``inertial`` after ``press``, without massless coordinates.
     top : float
         max_i (|S| 1)_i bounded from above: no eigenvalue is larger in absolute value.
     """
@@ -59,6 +64,7 @@ class Extents:
     formed_held: Array
     inertial: Array
     margin: float
+    pressed: tuple[Array, Array]
     top: float
 
     def tau(self, sigma: float) -> float:
@@ -94,11 +100,18 @@ class Extents:
         factoring : array (n,)
             Rounding of the factorization times ``vector(tau(sigma))``; zero gives the part that needs none.
         """
+        if self.margin == np.inf:
+            known = self.pressed[0] + abs(sigma) * self.pressed[1]
+            return SLACK * float((known + self.basis_t @ factoring).max())
         tau = self.tau(sigma)
-        rows = factoring + self.formed + abs(sigma) * self.inertial
-        if self.margin < np.inf:
-            rows = rows + np.sqrt(tau) * self.formed_held
+        rows = factoring + self.formed + abs(sigma) * self.inertial + np.sqrt(tau) * self.formed_held
         return self._trusted(SLACK * float(self.press(rows, tau).max()), tau)
+
+    def least(self, sigma: float) -> float:
+        """Return the part of the uncertainty that needs no factorization."""
+        if self.margin == np.inf:
+            return SLACK * float((self.pressed[0] + abs(sigma) * self.pressed[1]).max())
+        return self.uncertainty(sigma, np.zeros(self.held.size))
 
     def refined(self, sigma: float, factoring: Array, again: Rounding) -> float:
         """Bound the same norm more sharply by max_i (F' d)_i / d_i with d after some power steps.
@@ -120,7 +133,7 @@ class Extents:
             scaling = np.maximum(pressed / pressed.max(), LEAST_SCALING)
             pressed = self.press(again(self.lift(scaling, tau)), tau)
         sharper = SLACK * float((pressed / scaling).max())
-        return self._trusted(sharper + self.uncertainty(sigma, np.zeros_like(factoring)), tau)
+        return self._trusted(sharper + self.least(sigma), tau)
 
     def _trusted(self, delta: float, tau: float) -> float:
         return delta if delta < 0.5 * tau * self.margin else np.inf
@@ -136,14 +149,18 @@ def extents_of(parts: PencilParts, pattern: Pattern, margin: float) -> Extents:
     held[massless] = 1 / np.sqrt(np.where(diagonal > 0, diagonal, np.inf))
     share = gamma(2) + (gamma(parts.terms + 2) if parts.terms else 0.0)
     order = np.argsort(pattern.place)
+    basis_t = sp.csr_array(absolute[order].T)
+    formed = share * (formation @ reach)[order]
+    inertial = gamma(2) * (abs(parts.M) @ reach)[order]
     return Extents(
-        basis_t=sp.csr_array(absolute[order].T),
+        basis_t=basis_t,
         reach=reach[order],
         held=held[order],
-        formed=share * (formation @ reach)[order],
+        formed=formed,
         formed_held=share * (formation @ held)[order],
-        inertial=gamma(2) * (abs(parts.M) @ reach)[order],
+        inertial=inertial,
         margin=margin,
+        pressed=(basis_t @ formed, basis_t @ inertial),
         top=SLACK * float((absolute.T @ (formation @ reach)).max()),
     )
 
@@ -154,11 +171,11 @@ def factor_rounding(pattern: Pattern, lu: "SuperLU[np.float64]") -> tuple[Array,
     The rounding is gamma_(s+3) |L||U| + |R||D||R|^T of ``ShiftedPencil.factorize``.
     """
     if pattern.factors is not None and pattern.factors.describe(lu):
-        return _mirrored(pattern.factors, gamma(pattern.terms + 3), lu)
+        return _mirrored(pattern.factors, pattern.terms, lu)
     return _unmirrored(gamma(pattern.terms + 3), lu)
 
 
-def _mirrored(shape: Factors, share: Array, lu: "SuperLU[np.float64]") -> tuple[Array, Rounding]:
+def _mirrored(shape: Factors, terms: Indices, lu: "SuperLU[np.float64]") -> tuple[Array, Rounding]:
     """Work on the entries alone, as U mirrors L entry by entry."""
     upper = lu.U.data[shape.mirror]
     pivots = upper[shape.diagonal]
@@ -168,11 +185,16 @@ def _mirrored(shape: Factors, share: Array, lu: "SuperLU[np.float64]") -> tuple[
     size = np.abs(upper) + apart
     starts, rows = shape.lower_indptr[:-1], shape.lower_indices
     inverse = 1 / np.abs(pivots)
+    # R is U to the asymmetry found: where that is small, |R||D||R|^T is below u |L||U|, one more rounding
+    symmetric = bool(np.all(apart <= ASYMMETRY * size))
+    share = gamma(terms + (4 if symmetric else 3))
 
     def times(vector: Array) -> Array:
         grown = np.add.reduceat(size * (share * vector)[rows], starts) * inverse
-        skew = np.add.reduceat(apart * vector[rows], starts) * (0.25 * inverse)
-        entries = size * grown[shape.columns] + apart * skew[shape.columns]
+        entries = size * grown[shape.columns]
+        if not symmetric:
+            skew = np.add.reduceat(apart * vector[rows], starts) * (0.25 * inverse)
+            entries = entries + apart * skew[shape.columns]
         return np.bincount(rows, entries, vector.size).astype(float, copy=False)
 
     return pivots, times
