@@ -108,7 +108,7 @@ def _window(request: Request, assembly: Assembly, omega: float, place: int, plac
         near = find_near(pencil, omega**2, asked, cancelled=request.cancelled, progress=told)
         values = near.modes.eigenvalues
         below = values[0] <= omega**2 or near.certificate.low <= 0
-        above = values[-1] >= omega**2 or values.size < asked or values.size >= pencil.modes
+        above = values[-1] >= omega**2 or (near.numbers or (0,))[-1] == pencil.modes
         if (below and above) or 2 * asked > MOST:
             break
         asked *= 2

@@ -14,8 +14,8 @@ from modalview.errors import NumericalError
 Array = npt.NDArray[np.float64]
 
 RAD_PER_HZ = 2 * np.pi
-# Windows tried until the numbers wanted are in one.
-TRIES = 6
+# Steps towards a number by pivots, and how near to it is near enough to look for its mode.
+TRIES, CLOSE = 12, 2
 # Modes looked for beyond those wanted, since the guess is rough.
 SPARE = 3
 
@@ -48,28 +48,39 @@ def _end(
 
 def _located(case: Pencil, near: NearModes, cancelled: Callable[[], bool]) -> NearModes | None:
     """Find the modes of these numbers, from where their shapes would lie in this case."""
-    first, last = (near.numbers or (1,))[0], (near.numbers or (1,))[-1]
-    wanted = last - first + 1
+    numbers = near.numbers or (1,)
+    first, last = numbers[0], numbers[-1]
+    density = (last - first + 2) / max(near.certificate.high - near.certificate.low, np.finfo(float).tiny)
     guess = float(np.mean(_quotients(case, near.modes.shapes)))
-    for _ in range(TRIES):
+    guess = _centred(case, (first + last) / 2, guess, density)
+    wanted = last - first + 1 + SPARE
+    while wanted <= MOST:
         try:
-            found = find_near(case, guess, min(wanted + SPARE, MOST), cancelled=cancelled)
+            found = find_near(case, guess, wanted, cancelled=cancelled)
         except NumericalError:
             return None
-        if found.numbers is None:
-            return None
-        if found.numbers[0] <= first and last <= found.numbers[-1]:
+        if found.numbers is None or (found.numbers[0] <= first and last <= found.numbers[-1]):
             return found
-        guess = _next_guess(found, (first + last) / 2, guess)
+        wanted *= 2
     return None
 
 
-def _next_guess(found: NearModes, middle: float, guess: float) -> float:
-    """Follow the density of modes seen to where the middle number would lie."""
-    values, numbers = found.modes.eigenvalues, found.numbers or (1,)
-    spacing = (values[-1] - values[0]) / (values.size - 1) if values.size > 1 else 0.1 * guess
-    moved = float(np.mean(values)) + (middle - (numbers[0] + numbers[-1]) / 2) * float(spacing)
-    return float(np.clip(moved, guess / 2, 2 * guess))
+def _centred(case: Pencil, middle: float, guess: float, density: float) -> float:
+    """Return an eigenvalue near that of the middle number, by pivots alone: proof comes with the modes."""
+    low, high = 0.0, np.inf
+    behind = middle - case.shifted.factorize(guess).negative
+    for _ in range(TRIES):
+        if abs(behind) <= CLOSE:
+            break
+        low, high = (guess, high) if behind > 0 else (low, guess)
+        moved = guess + behind / density
+        if not low < moved < high:
+            moved = 2 * guess if high == np.inf else (low + high) / 2
+        left = middle - case.shifted.factorize(moved).negative
+        if left != behind:
+            density = (behind - left) / (moved - guess)
+        guess, behind = moved, left
+    return guess
 
 
 def _quotients(case: Pencil, shapes: Array) -> Array:
