@@ -26,6 +26,9 @@ Array = npt.NDArray[np.float64]
 # Modes asked for at once: the subspace of one search has 200 dimensions.
 MOST = 80
 
+# Relative width of an interval beyond which a small model is solved as a whole.
+SHARP = 1e-11
+
 METHOD = "shifted inverse iteration with Krylov acceleration"
 
 
@@ -115,7 +118,7 @@ def find_near(
         hunt = Hunt(pencil, sigma, min(count, elastic), step).complete()
         step("error bounds", 0.9)
         found = _weighed(pencil, hunt, rigid_body=rigid_body)
-    if found.modes.complete or rigid_body or pencil.modes > SMALL:
+    if rigid_body or pencil.modes > SMALL or (found.modes.complete and _sharp(found.modes)):
         return found
     return _from_all(pencil, found, count)
 
@@ -159,8 +162,14 @@ def _weighed(pencil: Pencil, hunt: Hunt, *, rigid_body: bool) -> NearModes:
     )
 
 
+def _sharp(modes: Modes) -> bool:
+    """Whether every error bound is as narrow as a model that is not graded gives it."""
+    wide = modes.upper - modes.lower > SHARP * np.abs(modes.eigenvalues)
+    return not bool(np.any(wide & (modes.eigenvalues != 0)))
+
+
 def _from_all(pencil: Pencil, found: NearModes, count: int) -> NearModes:
-    """Where counts do not decide on a small model, find all of its modes and choose."""
+    """Where a small model is so graded that counts or bounds suffer, find all of its modes and choose."""
     modes, numbers, certificate = chosen(find_modes(pencil), found.sigma, count, TIE)
     return NearModes(found.sigma, modes, numbers, certificate, found.history)
 
