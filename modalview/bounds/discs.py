@@ -8,7 +8,7 @@ import numpy.typing as npt
 import scipy.sparse as sp
 
 from modalview.assembly.pencil import Pencil
-from modalview.bounds.forms import Forms, Matrix, mass_is_diagonal, row_sums, scaled
+from modalview.bounds.forms import Forms, Matrix, magnitude, mass_is_diagonal, row_sums, scaled
 from modalview.factor.rounding import SLACK, gamma
 
 Array = npt.NDArray[np.float64]
@@ -74,23 +74,43 @@ def discs_of(pencil: Pencil, forms: Forms) -> tuple[Discs, Discs, Discs] | None:
     """
     if not have_discs(pencil):
         return None
-    ratio, rounding = scaled_ratio(pencil, forms)
-    return (
-        _discs(ratio, row_sums(rounding), "rows"),
-        _discs(ratio.T, row_sums(rounding.T), "columns"),
-        _discs(forms.S, forms.rounding(np.ones(forms.modes)), "symmetric"),
-    )
+    by_rows, by_columns = _sums_of_ratio(pencil, forms)
+    ones = np.ones(forms.modes)
+    own = _Sums(np.array(forms.S.diagonal()), row_sums(forms.S), forms.rounding(ones))
+    return _discs(by_rows, "rows"), _discs(by_columns, "columns"), _discs(own, "symmetric")
 
 
-def scaled_ratio(pencil: Pencil, forms: Forms) -> tuple[Matrix, Matrix]:
+@dataclass(frozen=True, slots=True, eq=False)
+class _Sums:
+    """Diagonal of a matrix, sums of |entries| of its rows, and a bound of the rounding in each."""
+
+    centres: Array
+    reach: Array
+    rounding: Array
+
+
+def _sums_of_ratio(pencil: Pencil, forms: Forms) -> tuple[_Sums, _Sums]:
+    """Return the sums of the scaled M^-1 K by rows and by columns."""
+    if not mass_is_diagonal(pencil):
+        ratio, rounding = _scaled_ratio(pencil, forms)
+        centres = np.array(ratio.diagonal())
+        return (
+            _Sums(centres, row_sums(ratio), row_sums(rounding)),
+            _Sums(centres, row_sums(ratio.T), row_sums(rounding.T)),
+        )
+    # D^-1 S D with D = sqrt(m) / scale: products with |S| give the sums without forming it
+    massy = ~pencil.massless
+    right = np.sqrt(pencil.M.diagonal()[massy]) / pencil.scale[massy]
+    size, centres = magnitude(forms.S), np.array(forms.S.diagonal())
+    share = SLACK * (forms.share + gamma(8))
+    found = tuple(_Sums(centres, (size @ d) / d, share * (forms.spread @ d) / d) for d in (right, 1 / right))
+    return found[0], found[1]
+
+
+def _scaled_ratio(pencil: Pencil, forms: Forms) -> tuple[Matrix, Matrix]:
     """Return the scaled M^-1 K (modes, modes) and a bound of its rounding, entry by entry; 1/s**2."""
     massy = ~pencil.massless
     scale = pencil.scale[massy]
-    if mass_is_diagonal(pencil):
-        mass = pencil.M.diagonal()[massy]
-        left, right = scale / np.sqrt(mass), np.sqrt(mass) / scale
-        share = SLACK * (forms.share + gamma(8))
-        return scaled(forms.S, left, right), scaled(forms.spread, share * left, right)
     root = sp.csr_array(pencil.basis)[massy]
     width = int(np.diff(root.indptr).max(initial=1))
     block = sp.csr_array(pencil.M)[massy][:, massy]
@@ -100,11 +120,10 @@ def scaled_ratio(pencil: Pencil, forms: Forms) -> tuple[Matrix, Matrix]:
     return scaled(ratio, scale, 1 / scale), scaled(rounding, share * scale, 1 / scale)
 
 
-def _discs(matrix: Matrix, rounding: Array, kind: Kind) -> Discs:
-    centres = np.array(matrix.diagonal())
-    reach = row_sums(matrix)
-    radii = np.maximum(reach - np.abs(centres), 0.0) + gamma(centres.size + 4) * reach
-    radii = np.nextafter(radii + rounding, np.inf)
+def _discs(sums: _Sums, kind: Kind) -> Discs:
+    centres = sums.centres.copy()
+    radii = np.maximum(sums.reach - np.abs(centres), 0.0) + gamma(centres.size + 8) * sums.reach
+    radii = np.nextafter(radii + sums.rounding, np.inf)
     for array in (centres, radii):
         array.setflags(write=False)
     return Discs(centres, radii, kind, groups_of(centres, radii))

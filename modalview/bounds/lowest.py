@@ -29,6 +29,9 @@ BELOW_DUNKERLEY = (1 - 1e-12, 1 - 1e-9, 1 - 1e-6, 0.9, 0.5, 0.1, 1e-2)
 # usually within a few per cent of the truth.
 BELOW_RITZ = (0.9, 0.5, 0.1, 1e-2, 1e-4)
 
+# The bound gives way by the uncertainty of its count: to this share of it no sharpening is worth its time.
+PLAIN_ENOUGH = 1e-6
+
 # Combinations of unit shapes shorter than this are what rounding left of dependent ones, and may be
 # rigid-body motion.
 INDEPENDENT = 1e-6
@@ -190,7 +193,7 @@ def _energy(pencil: Pencil, forms: Forms, shape: Array) -> float:
 
 def _proven(shifted: ShiftedPencil, proposals: list[float], rigid: int) -> float:
     for sigma in proposals:
-        found = shifted.factorize(sigma)
+        found = shifted.factorize(sigma, PLAIN_ENOUGH)
         if found.uncertainty >= sigma and shifted.relative is not None:
             found = shifted.relative.factorize(sigma)
         if found.negative <= rigid and found.uncertainty < sigma:

@@ -17,7 +17,7 @@ from modalview.factor.uncertainty import Extents, extents_of, factor_rounding
 
 Array = npt.NDArray[np.float64]
 
-# An uncertainty beyond this share of the shift is worth the time to bound it more sharply.
+# An uncertainty beyond this share of the shift is bounded more sharply unless asked otherwise.
 REFINED_SHARE = 1e-9
 
 # Margins asked of a large massless block, in turn.
@@ -62,8 +62,15 @@ class ShiftedPencil:
         """Number of modes: coordinates with inertia."""
         return int(self.extents.basis_t.shape[0])
 
-    def factorize(self, sigma: float) -> Inertia:
+    def factorize(self, sigma: float, sharp: float = REFINED_SHARE) -> Inertia:
         """Count by the signs of sparse pivots; uncertainty infinite where pivoting broke the symmetry.
+
+        Parameters
+        ----------
+        sigma : float
+            rad**2/s**2.
+        sharp : float
+            An uncertainty beyond this share of sigma is worth the time to bound it more sharply.
 
         Notes
         -----
@@ -105,7 +112,7 @@ class ShiftedPencil:
         pivots, times = factor_rounding(pattern, lu)
         rounding = times(extents.vector(extents.tau(sigma)))
         delta = extents.uncertainty(sigma, rounding)
-        if REFINED_SHARE * abs(sigma) < delta < np.inf:
+        if sharp * abs(sigma) < delta < np.inf:
             delta = min(delta, extents.refined(sigma, rounding, times))
         return Inertia(sigma, int(np.count_nonzero(pivots < 0)), delta, "sparse LDL^T", lu)
 
