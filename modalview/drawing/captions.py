@@ -113,6 +113,21 @@ def shortened(text: str, room: float, size: Size = Size.NORMAL, text_scale: floa
     return kept.rstrip() + "…"
 
 
+def in_two(text: str, room: float, text_scale: float = 1.0) -> tuple[str, ...]:
+    """Break a small text that is wider than its room after the last word that fits.
+
+    >>> in_two("baseplate of the pump", 90.0)
+    ('baseplate of', 'the pump')
+    """
+    words = text.split()
+    if len(words) < 2 or text_width(text, Size.SMALL, text_scale=text_scale) <= room:
+        return (text,)
+    heads = [" ".join(words[:count]) for count in range(1, len(words))]
+    fitting = [head for head in heads if text_width(head, Size.SMALL, text_scale=text_scale) <= room]
+    head = fitting[-1] if fitting else heads[0]
+    return head, text[len(head) :].strip()
+
+
 def _order(excitation: Excitation) -> str:
     return f"{excitation.order:g}×"
 

@@ -4,7 +4,7 @@ from dataclasses import dataclass
 
 import numpy as np
 
-from modalview.drawing.captions import shortened
+from modalview.drawing.captions import in_two, shortened
 from modalview.drawing.primitives import Anchor, Box, Drawing, Floats, Item, Lines, Role, Size, Text
 from modalview.drawing.symbols import arrow
 from modalview.drawing.textsize import text_width
@@ -13,6 +13,8 @@ from modalview.model.parts import FREEDOMS, Model, Motion
 
 GRID_STEP = 24.0
 MARGIN = 12.0
+TWO_LINES = 0.6  # of the block: a title wider than this at the smaller size stands in two lines
+SECOND = 15.0  # height of the second line
 TITLE_SHARE = (0.45, 0.68)  # of the block, for the left column: least and most
 
 
@@ -50,7 +52,8 @@ def title_size(title: str, sheet_width: float, text_scale: float) -> tuple[float
     """Return width and height of the title block in pixels: wide enough for the title, to half the sheet."""
     need = (text_width(title, text_scale=text_scale) + 20.0) / TITLE_SHARE[1]
     width = min(max(need, 330.0 * text_scale), max(0.6 * sheet_width, 200.0), sheet_width - 2 * MARGIN)
-    return width, 68.0 * text_scale
+    two = text_width(title, Size.SMALL, text_scale=text_scale) > TWO_LINES * width - 14.0
+    return width, (68.0 + (SECOND if two else 0.0)) * text_scale
 
 
 def title_block(lines: TitleLines, sheet_width: float, text_scale: float) -> tuple[Item, ...]:
@@ -65,7 +68,7 @@ def title_block(lines: TitleLines, sheet_width: float, text_scale: float) -> tup
     # The verdict is never cut short: the title gives way.
     least = text_width(lines.checked, Size.SMALL, text_scale=text_scale) + 16.0
     share = min(share, 1.0 - least / width)
-    split, middle = left + share * width, top + height / 2
+    split, middle = left + share * width, top + height - 34.0 * text_scale
     cross = np.array([[left, middle, left + width, middle], [split, top, split, top + height]])
     items: list[Item] = [
         Box(left, top, width, height, 0.0, Role.INK, Role.PAPER, 1.2),
@@ -80,9 +83,19 @@ def title_block(lines: TitleLines, sheet_width: float, text_scale: float) -> tup
     for name, text, x, y, room in cells:
         inner = room - 14.0
         size = Size.NORMAL if text_width(text, text_scale=text_scale) <= inner else Size.SMALL
+        rows: tuple[str, ...] = (text,)
+        if y == top and height > 70.0 * text_scale:
+            rows = in_two(text, inner, text_scale)
+        items.append(Text(x + 8, y + 9.0 * text_scale, name, Role.MUTED, Size.SMALL))
         items += [
-            Text(x + 8, y + 9.0 * text_scale, name, Role.MUTED, Size.SMALL),
-            Text(x + 8, y + 24.0 * text_scale, shortened(text, inner, size, text_scale), Role.INK, size),
+            Text(
+                x + 8,
+                y + (24.0 + SECOND * row) * text_scale,
+                shortened(part, inner, size, text_scale),
+                Role.INK,
+                size,
+            )
+            for row, part in enumerate(rows)
         ]
     return tuple(items)
 

@@ -6,6 +6,7 @@ import numpy as np
 
 from modalview.drawing.layout import GROUND, Layout, layout
 from modalview.drawing.linkends import LinkEnds, link_ends
+from modalview.drawing.marks import body_marks
 from modalview.drawing.outline import Outlines, faces, outlines
 from modalview.drawing.primitives import Floats, Text
 from modalview.drawing.symbols import Symbol
@@ -53,12 +54,31 @@ class LinkGroup:
         Drawn over the bodies.
     joint : bool
         Between two touching bodies.
+    spans : array (n, 3) or None
+        From end to end, world; of beams, whose shape follows the rotation of their ends.
     """
 
     symbol: Symbol
     ends: Indices
     on_top: bool
     joint: bool
+    spans: Floats | None = None
+
+
+@dataclass(frozen=True, slots=True, eq=False)
+class Mark:
+    """Lines on one body.
+
+    Parameters
+    ----------
+    lines : array (n, 2) of int
+        Indices of the points each line joins.
+    width : float
+        Pixels.
+    """
+
+    lines: Indices
+    width: float
 
 
 @dataclass(frozen=True, slots=True, eq=False)
@@ -112,6 +132,8 @@ class SheetGeometry:
         Links drawn over the bodies.
     train : Train or None
         In a shaft train.
+    marks : tuple of Mark
+        Lines drawn on bodies, which move and turn with them: pitch circles, radii of discs.
     reach : float
         Pixels of the largest motion at amplitude 1.
     labels, body_labels : tuple of Text, tuple of (body, Text)
@@ -140,6 +162,7 @@ class SheetGeometry:
     link_bodies: Indices
     links_on_top: np.ndarray[tuple[int], np.dtype[np.bool_]]
     train: Train | None
+    marks: tuple[Mark, ...]
     reach: float
     labels: tuple[Text, ...] = ()
     body_labels: tuple[tuple[int, Text], ...] = ()
@@ -200,6 +223,7 @@ def bare_geometry(
     )
     links = link_ends(model, places, view, boxes, grow)
     groups = _collect_links(collector, places, view, links, model.motion)
+    marks = _collect_marks(collector, model, places, view, outline)
     train = _train(model, places, view, boxes, grow) if model.motion is Motion.SHAFT_TRAIN else None
     return SheetGeometry(
         model=model,
@@ -218,6 +242,7 @@ def bare_geometry(
         link_bodies=places.end_bodies,
         links_on_top=links.on_top,
         train=train,
+        marks=marks,
         reach=_reach(links, train, grow),
     )
 
@@ -305,8 +330,30 @@ def _collect_links(
         for on_top, joint in ((False, False), (True, False), (True, True)):
             chosen = np.flatnonzero(same & (links.on_top == on_top) & (links.joints == joint))
             if len(chosen):
-                groups.append(LinkGroup(symbol, indices[chosen], on_top, joint))
+                spans = _spans(places, view, links, chosen, motion) if symbol is Symbol.BEAM else None
+                groups.append(LinkGroup(symbol, indices[chosen], on_top, joint, spans))
     return tuple(groups)
+
+
+def _spans(places: Layout, view: View, links: LinkEnds, chosen: Indices, motion: Motion) -> Floats:
+    """Return what beams span (n, 3), world: in a plane as it is seen, between the edges of the bodies."""
+    if motion is Motion.SPACE:
+        return np.asarray(places.ends[chosen, 1] - places.ends[chosen, 0])
+    seen = links.ends[chosen, 1] - links.ends[chosen, 0]
+    return np.hstack([seen / np.array([view.scale_x, -view.scale_y]), np.zeros((len(chosen), 1))])
+
+
+def _collect_marks(
+    collector: _Collector, model: Model, places: Layout, view: View, outline: Outlines
+) -> tuple[Mark, ...]:
+    if model.motion not in (Motion.PLANE, Motion.SPACE):
+        return ()
+    marks = []
+    for body, arms, width in body_marks(model, places, outline):
+        rest = view.to_pixels(places.centres[body] + arms.reshape(-1, 3))
+        indices = collector.add(rest, arms, np.full(arms.shape[:2], body))
+        marks.append(Mark(indices.reshape(-1, 2), width))
+    return tuple(marks)
 
 
 def _train(model: Model, places: Layout, view: View, boxes: Floats, grow: float) -> Train:

@@ -10,6 +10,7 @@ from modalview.drawing.textsize import line_height, text_width
 
 Rectangle = tuple[float, float, float, float]  # x, y, width, height
 Truths = npt.NDArray[np.bool_]
+LEVEL = 6.0  # more pixels beside a link that lies level: its end moves up and down
 _BATCH = 8  # spots tried at once: most labels find room among the first
 
 
@@ -59,7 +60,12 @@ class Board:
         return wide, sum(line_height(li.size, text_scale=self.text_scale) for li in lines)
 
     def place(
-        self, lines: tuple[Line, ...], spots: list[Spot], *, within: Rectangle | None = None
+        self,
+        lines: tuple[Line, ...],
+        spots: list[Spot],
+        *,
+        within: Rectangle | None = None,
+        sway: tuple[float, float] = (0.0, 0.0),
     ) -> list[Text]:
         """Put a label at the first free spot and take its room; nothing when none is free.
 
@@ -70,11 +76,15 @@ class Board:
             In order of preference.
         within : Rectangle or None
             Where the label must lie; None is the sheet.
+        sway : pair of float
+            Pixels that the label moves with its body across and up, to both sides; that room is kept too.
         """
+        if not spots:
+            return []
         size = self.size(lines)
         offered = np.array([(spot.x, spot.y, spot.right, spot.down) for spot in spots]).reshape(-1, 4)
         corners = offered[:, :2] + (offered[:, 2:] - 1) / 2 * size
-        boxes = np.hstack([corners, corners + size])
+        boxes = np.hstack([corners - sway, corners + size + sway])
         free = np.flatnonzero(self._inside(boxes, within))
         if not len(free):
             return []
@@ -154,12 +164,14 @@ def round_about(box: Rectangle, gap: float = 6.0) -> list[Spot]:
 
 def ring_about(x: float, y: float) -> list[Spot]:
     """Return spots on widening rings about a point, for what has found no room beside it."""
-    turns = np.radians(np.arange(0, 360, 20))
-    spots = []
-    for radius in (50, 70, 90, 115, 145, 180, 220):
-        for cosine, sine in zip(np.cos(turns).tolist(), np.sin(turns).tolist(), strict=True):
-            spots.append(Spot(x + radius * cosine, y + radius * sine, round(cosine), round(sine)))
-    return spots
+    return [Spot(x + dx, y + dy, right, down) for dx, dy, right, down in _RINGS]
+
+
+_RINGS = tuple(
+    (radius * float(np.cos(turn)), radius * float(np.sin(turn)), round(np.cos(turn)), round(np.sin(turn)))
+    for radius in (50, 70, 90, 115, 145, 180, 220)
+    for turn in np.radians(np.arange(0, 360, 20))
+)
 
 
 def along(start: Floats, stop: Floats, gap: float = 12.0) -> list[Spot]:
@@ -170,6 +182,7 @@ def along(start: Floats, stop: Floats, gap: float = 12.0) -> list[Spot]:
     for further in (gap, gap + 14, gap + 40):
         for share in (0.5, 0.6, 0.4, 0.72, 0.28, 0.9, 0.1):
             x, y = start + share * step
-            sides = [(further, 0.0), (-further, 0.0)] if upright else [(0.0, -further), (0.0, further)]
+            level = further + LEVEL
+            sides = [(further, 0.0), (-further, 0.0)] if upright else [(0.0, -level), (0.0, level)]
             spots += [Spot(x + dx, y + dy, int(np.sign(dx)), int(np.sign(dy))) for dx, dy in sides]
     return spots

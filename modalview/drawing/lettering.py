@@ -4,6 +4,7 @@ from collections import defaultdict
 from dataclasses import dataclass, replace
 
 import numpy as np
+import numpy.typing as npt
 
 from modalview.drawing.captions import body_lines, link_lines
 from modalview.drawing.excitations import Push, pushes
@@ -14,12 +15,19 @@ from modalview.drawing.layout import GROUND
 from modalview.drawing.primitives import Floats, Role, Size, Text
 from modalview.model.parts import Motion
 
+Indices = npt.NDArray[np.int_]
+
 # Beyond this many links their texts would only cover each other.
 MOST_LABELS = 120
 MOST_ALIKE = 2  # more links of one text than this are written once
 LINK_HALF = 9.0  # half the width that a symbol takes, pixels
 SWAY = 14.0  # pixels beside a body that its motion may cover
-SAMPLES = 8  # rectangles along a link
+SAMPLES = 8  # most rectangles along a link
+SLANT = 14.0  # pixels of slant for each
+CROWD = 24  # with more bodies than this their texts stay on them, or shrink to a name beside
+USUAL = 0.6  # times the reach: how far parts move at the amplitude the window starts with
+LARGE_TEXT = 1.25  # times the size: texts larger than this fall away rather than stand far off
+ALIKE_TRIES = 6  # of links that share their text, so many are tried with a leader
 APART = 40.0  # pixels: a text further from its link has a leader
 SHORT = 110.0  # pixels: shorter links may be written at the side of the body they carry
 
@@ -59,7 +67,7 @@ def _taken(geometry: SheetGeometry) -> Floats:
     width, height = title_size(geometry.model.title, geometry.width, geometry.text_scale)
     corner = [geometry.width - MARGIN - width - 4, 0.0, geometry.width, MARGIN + height + 4]
     taken = [np.array([corner]), axes(geometry.model.motion, geometry.text_scale)[1], geometry.boxes]
-    taken += [_link_boxes(geometry), _foot_boxes(geometry)]
+    taken += [_link_boxes(geometry)[0], _foot_boxes(geometry)]
     train = geometry.train
     if train is None:
         taken += [_arrow_room(geometry)]
@@ -77,11 +85,8 @@ def _taken_inside(geometry: SheetGeometry) -> Floats:
     marks = geometry.points.rest[geometry.centres]
     if geometry.model.motion in (Motion.PLANE, Motion.SPACE):
         taken.append(np.hstack([marks - 14.0, marks + 14.0]))
-    if geometry.model.motion is not Motion.SPACE:  # there the links inside are behind
-        taken.append(_link_boxes(geometry))
-    else:
-        on_top = geometry.links_on_top
-        taken.append(_link_boxes(geometry).reshape(-1, SAMPLES, 4)[on_top].reshape(-1, 4))
+    boxes, links = _link_boxes(geometry)
+    taken.append(boxes[geometry.links_on_top[links]])  # the others lie behind the bodies
     return np.vstack(taken)
 
 
@@ -93,15 +98,18 @@ def _arrow_room(geometry: SheetGeometry) -> Floats:
     return np.stack([x1 - level, middle - 22, x1, middle + 22], axis=1)
 
 
-def _link_boxes(geometry: SheetGeometry) -> Floats:
-    """Return small rectangles along every link, so that slanted ones take no more than their line."""
+def _link_boxes(geometry: SheetGeometry) -> tuple[Floats, Indices]:
+    """Return rectangles along every link, more of them the more slanted it is, and the link of each."""
     ends = geometry.link_ends
-    shares = np.linspace(0, 1, SAMPLES + 1)
-    marks = ends[:, :1] + shares[None, :, None] * (ends[:, 1:] - ends[:, :1])
-    low = np.minimum(marks[:, :-1], marks[:, 1:]) - LINK_HALF * geometry.grow
-    high = np.maximum(marks[:, :-1], marks[:, 1:]) + LINK_HALF * geometry.grow
-    boxes: Floats = np.concatenate([low, high], axis=2).reshape(-1, 4)
-    return boxes
+    steps = ends[:, 1] - ends[:, 0]
+    slant = np.abs(steps).min(axis=1, initial=np.inf) if len(ends) else np.zeros(0)
+    counts = np.clip(np.ceil(slant / SLANT), 1, SAMPLES).astype(int)
+    links = np.repeat(np.arange(len(ends)), counts)
+    ranks = np.arange(len(links)) - np.repeat(np.cumsum(counts) - counts, counts)
+    shares = np.stack([ranks, ranks + 1])[..., None] / counts[links][None, :, None]
+    marks = ends[links, 0] + shares * steps[links]
+    half = LINK_HALF * geometry.grow
+    return np.hstack([marks.min(axis=0) - half, marks.max(axis=0) + half]), links
 
 
 def _foot_boxes(geometry: SheetGeometry) -> Floats:
@@ -117,21 +125,53 @@ def _name_bodies(geometry: SheetGeometry, board: Board, inner: Board, letters: _
     many = len(geometry.model.bodies) > MOST_LABELS  # names alone then, and only where they fit inside
     for number, body in enumerate(geometry.model.bodies):
         name, *values = body_lines(geometry.model, body)
-        if many:
-            values = []
-        lines = (Line(name, bold=True), *(Line(text, Role.MUTED) for text in values))
-        x1, y1, x2, y2 = geometry.fronts[number].tolist()
-        within = (x1 + 3, y1 + 1, x2 - x1 - 6, y2 - y1 - 2)
-        placed = inner.place(lines, _inside(within, board.size(lines)), within=within)
-        if not placed and geometry.train is not None:
-            placed = board.place(lines, _by_disc(geometry, number))
-        if not placed and not many:
-            box = geometry.boxes[number]
-            far = ring_about(*((box[:2] + box[2:]) / 2).tolist())
-            placed = board.place(lines, round_about(_rectangle(box), 12.0) + far)
+        title = (Line(name, bold=True),)
+        whole = title + tuple(Line(text, Role.MUTED) for text in (() if many else values))
+        if geometry.text_scale > LARGE_TEXT and not _fits_in(geometry, board, number, whole):
+            whole = title
+        placed = _by_body(geometry, (board, inner), number, whole)
+        if not placed and len(whole) > 1:  # where there is no room the values fall away first
+            placed = _by_body(geometry, (board, inner), number, title)
+        if not placed and not many and len(geometry.model.bodies) <= CROWD:
+            middle = geometry.boxes[number].reshape(2, 2).mean(axis=0)
+            placed = board.place(title, ring_about(*middle.tolist()), sway=_sway(geometry))
         letters.body_labels += [(number, text) for text in placed]
         if not placed:
             letters.unlabelled.append(body.id)
+
+
+def _fits_in(geometry: SheetGeometry, board: Board, number: int, lines: tuple[Line, ...]) -> bool:
+    x1, y1, x2, y2 = geometry.fronts[number].tolist()
+    wide, high = board.size(lines)
+    return bool(wide <= x2 - x1 - 6 and high <= y2 - y1 - 2)
+
+
+def _by_body(
+    geometry: SheetGeometry, boards: tuple[Board, Board], number: int, lines: tuple[Line, ...]
+) -> list[Text]:
+    """Write lines on a body, else by its disc, else beside it."""
+    board, inner = boards
+    x1, y1, x2, y2 = geometry.fronts[number].tolist()
+    within = (x1 + 3, y1 + 1, x2 - x1 - 6, y2 - y1 - 2)
+    if _fits_in(geometry, board, number, lines):
+        placed = inner.place(lines, _inside(within, board.size(lines)), within=within)
+        if placed:
+            return placed
+    if geometry.train is not None:
+        placed = board.place(lines, _by_disc(geometry, number))
+        if placed:
+            return placed
+    if len(geometry.model.bodies) > CROWD and len(lines) > 1:
+        return []
+    return board.place(lines, round_about(_rectangle(geometry.boxes[number]), 12.0), sway=_sway(geometry))
+
+
+def _sway(geometry: SheetGeometry) -> tuple[float, float]:
+    """Return how far a body's texts move across and up at the usual amplitude."""
+    if geometry.train is not None:
+        return 0.0, 0.0
+    up = USUAL * geometry.reach
+    return (0.0 if geometry.model.motion is Motion.SINGLE_AXIS else up), up
 
 
 def _rectangle(box: Floats) -> Rectangle:
@@ -160,22 +200,36 @@ def _by_disc(geometry: SheetGeometry, number: int) -> list[Spot]:
 def _name_pushes(
     geometry: SheetGeometry, acting: tuple[Push, ...], boards: tuple[Board, Board], letters: _Letters
 ) -> None:
-    board, inner = boards
     for push in acting:
         lines = tuple(Line(text, Role.WARN) for text in push.texts)
-        if push.on_body:
-            x1, y1, x2, y2 = push.box[0].tolist()
-            within = _rectangle(geometry.fronts[push.body])
-            near = round_about((x1, y1, x2 - x1, y2 - y1), 4.0)
-            placed = inner.place(lines, near, within=within)
-            letters.body_labels += [(push.body, text) for text in placed]
-            if placed:
-                continue
-        x, y = push.box[0, 0], push.box[0, 1]
-        placed = board.place(lines, [*push.spots, *ring_about(float(x), float(y))])
+        small = tuple(replace(line, size=Size.SMALL) for line in lines)
+        heads = (Line(", ".join(text.partition(",")[0] for text in push.texts), Role.WARN, Size.SMALL),)
+        placed: list[Text] = []
+        still, sway = (0.0, 0.0), _sway(geometry)
+        for some, room in ((lines, sway), (small, sway), (lines, still), (small, still), (heads, still)):
+            placed = placed or _by_push(geometry, push, boards, some, room)
         letters.body_labels += [(push.body, text) for text in placed]
         if not placed:
             letters.unlabelled.append(push.texts[0])
+
+
+def _by_push(
+    geometry: SheetGeometry,
+    push: Push,
+    boards: tuple[Board, Board],
+    lines: tuple[Line, ...],
+    sway: tuple[float, float],
+) -> list[Text]:
+    """Write lines by an arrow: on its body where it acts there, else by it, about it, on the body."""
+    board, inner = boards
+    x1, y1, x2, y2 = push.box[0].tolist()
+    within = _rectangle(geometry.fronts[push.body])
+    placed: list[Text] = []
+    if push.on_body:
+        placed = inner.place(lines, round_about((x1, y1, x2 - x1, y2 - y1), 4.0), within=within)
+    spots = [*push.spots, *ring_about(x1, y1)]
+    placed = placed or board.place(lines, spots, sway=sway)
+    return placed or inner.place(lines, _inside(within, board.size(lines)), within=within)
 
 
 def _name_links(geometry: SheetGeometry, board: Board, letters: _Letters) -> None:
@@ -199,16 +253,32 @@ def _name_links(geometry: SheetGeometry, board: Board, letters: _Letters) -> Non
 def _name_link(
     geometry: SheetGeometry, board: Board, letters: _Letters, number: int, lines: tuple[Line, ...]
 ) -> None:
-    if not _placed_beside(geometry, board, letters, number, lines):
-        letters.unlabelled.append(geometry.model.links[number].id)
+    """Write name and values by a link; the name alone where there is no room, and for large texts far off."""
+    middle = geometry.link_ends[number].mean(axis=0)
+    beside = _beside(geometry, number)
+    if _placed_beside(geometry, board, letters, number, lines, beside):
+        return
+    far = ring_about(*middle.tolist())
+    tries = [(lines[:1], beside), (lines[:1], far)]
+    if geometry.text_scale <= LARGE_TEXT:
+        tries.insert(0, (lines, far))
+    for some, spots in tries:
+        if _placed_beside(geometry, board, letters, number, some, spots):
+            return
+    letters.unlabelled.append(geometry.model.links[number].id)
 
 
 def _placed_beside(
-    geometry: SheetGeometry, board: Board, letters: _Letters, number: int, lines: tuple[Line, ...]
+    geometry: SheetGeometry,
+    board: Board,
+    letters: _Letters,
+    number: int,
+    lines: tuple[Line, ...],
+    spots: list[Spot],
 ) -> bool:
     """Write lines by a link, with a leader where they stand apart; tell whether there was room."""
     middle = geometry.link_ends[number].mean(axis=0)
-    placed = board.place(lines, _beside(geometry, number) + ring_about(*middle.tolist()))
+    placed = board.place(lines, spots)
     letters.labels += placed
     if placed:
         x1, y1, x2, y2 = extent(placed, geometry.text_scale)
@@ -225,7 +295,12 @@ def _name_alike(
     kind = geometry.model.links[group[0]].kind
     lines = _link_label(f"each of {len(group)} {kind}s", values)
     for number in group:
-        if _placed_beside(geometry, board, letters, number, lines):
+        spots = _beside(geometry, number)
+        if _placed_beside(geometry, board, letters, number, lines, spots):
+            return
+    for number in group[:ALIKE_TRIES]:
+        spots = ring_about(*geometry.link_ends[number].mean(axis=0).tolist())
+        if _placed_beside(geometry, board, letters, number, lines, spots):
             return
     letters.unlabelled += [geometry.model.links[number].id for number in group]
 

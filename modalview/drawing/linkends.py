@@ -3,12 +3,16 @@
 from dataclasses import dataclass
 
 import numpy as np
+import numpy.typing as npt
 
 from modalview.drawing.layout import GROUND, Layout
 from modalview.drawing.primitives import Floats
 from modalview.drawing.symbols import Symbol
 from modalview.drawing.view import View
 from modalview.model.parts import Link, Model, Motion, Mount, RigidLink, Spring
+
+Indices = npt.NDArray[np.int_]
+Truths = npt.NDArray[np.bool_]
 
 SHORTEST = 46.0  # pixels of a link to the ground
 JOINT = 15.0  # half length of a link whose ends coincide on two bodies
@@ -63,8 +67,8 @@ def link_ends(model: Model, places: Layout, view: View, boxes: Floats, grow: flo
             along = np.array([1.0, 0.0]) if pull is None else pull
             middle = ends[number].mean(axis=0)
             ends[number] = middle - JOINT * grow * along, middle + JOINT * grow * along
-        if model.motion is not Motion.SPACE and not joints[number]:
-            _clip(ends[number], pair, boxes)
+    if model.motion is not Motion.SPACE:
+        _clip(ends, places.end_bodies, boxes, ~joints)
     return LinkEnds(tuple(_symbol(link, model.motion) for link in model.links), ends, on_top, joints)
 
 
@@ -138,18 +142,16 @@ def _lengthen(
     ends[foot] = ends[1 - foot] + least * away
 
 
-def _clip(ends: Floats, pair: np.ndarray[tuple[int], np.dtype[np.int_]], boxes: Floats) -> None:
-    """Let a link begin at the edge of the body it is attached inside of."""
+def _clip(ends: Floats, pairs: Indices, boxes: Floats, chosen: Truths) -> None:
+    """Let links begin at the edge of the body they are attached inside of."""
     for side in (0, 1):
-        body = int(pair[side])
-        if body == GROUND:
-            continue
-        here, step = ends[side], ends[1 - side] - ends[side]
-        low, high = boxes[body, :2], boxes[body, 2:]
-        if not ((here >= low - 0.5) & (here <= high + 0.5)).all():
-            continue
+        rows = np.flatnonzero(chosen & (pairs[:, side] != GROUND))
+        here, step = ends[rows, side], ends[rows, 1 - side] - ends[rows, side]
+        box = boxes[pairs[rows, side]]
+        low, high = box[:, :2], box[:, 2:]
         with np.errstate(divide="ignore", invalid="ignore"):
             leaving = np.where(step > 0, (high - here) / step, (low - here) / step)
-        share = float(np.min(np.where(step != 0, leaving, np.inf)))
-        if 0 < share < 0.9:
-            ends[side] = here + share * step
+        share = np.where(step != 0, leaving, np.inf).min(axis=1, initial=np.inf)
+        inside = ((here >= low - 0.5) & (here <= high + 0.5)).all(axis=1)
+        moved = inside & (share > 0) & (share < 0.9)
+        ends[rows[moved], side] += share[moved, None] * step[moved]

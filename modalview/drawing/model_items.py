@@ -9,11 +9,13 @@ from modalview.drawing.geometry import LinkGroup, SheetGeometry
 from modalview.drawing.layout import GROUND
 from modalview.drawing.primitives import Circles, Floats, Item, Lines, Polygons, Role
 from modalview.drawing.symbols import (
+    BEAM_WIDTH,
     COARSE,
     JOINTS,
     MANY,
     TEMPLATES,
     Symbol,
+    bent,
     between,
     dashed,
     ground,
@@ -26,12 +28,21 @@ DOT = 3.4  # radius of a rigid link's ends
 FULL = 0.8  # below this size, symbols are simplified
 
 
-def part_items(geometry: SheetGeometry, points: Floats) -> tuple[Item, ...]:
-    """Return links and bodies at the given points (points, 2)."""
-    under = [item for group in geometry.links if not group.on_top for item in _link(geometry, group, points)]
-    over = [item for group in geometry.links if group.on_top for item in _link(geometry, group, points)]
+def part_items(
+    geometry: SheetGeometry, points: Floats, slopes: tuple[Floats | None, ...] | None = None
+) -> tuple[Item, ...]:
+    """Return links and bodies at the given points (points, 2).
+
+    ``slopes`` has, for each group of links that are beams, how far the rotation of each end alone would move
+    the other (n, 2, 2), pixels; None draws them straight.
+    """
+    slopes = slopes or (None,) * len(geometry.links)
+    under: list[Item] = []
+    over: list[Item] = []
+    for group, slope in zip(geometry.links, slopes, strict=True):
+        (over if group.on_top else under).extend(_link(geometry, group, points, slope))
     bodies = _bodies(geometry, points)
-    over += ground_items(geometry, on_top=True)
+    over += [*_body_marks(geometry, points), *ground_items(geometry, on_top=True)]
     return (*under, *bodies, *over, *_marks(geometry, points), *_teeth(geometry))
 
 
@@ -114,8 +125,18 @@ def label_items(geometry: SheetGeometry, steps: Floats | None = None) -> tuple[I
     )
 
 
-def _link(geometry: SheetGeometry, group: LinkGroup, points: Floats) -> list[Item]:
+def _body_marks(geometry: SheetGeometry, points: Floats) -> list[Item]:
+    return [
+        Lines(points[mark.lines].reshape(-1, 4), Role.INK, max(mark.width * geometry.grow, 0.8))
+        for mark in geometry.marks
+    ]
+
+
+def _link(geometry: SheetGeometry, group: LinkGroup, points: Floats, slopes: Floats | None) -> list[Item]:
     grow, symbol, ends = geometry.grow, group.symbol, points[group.ends]
+    if slopes is not None:
+        rest = geometry.points.rest[group.ends]
+        return [Lines(bent(rest, ends - rest, slopes), Role.INK, max(BEAM_WIDTH * grow, 1.0))]
     template, width = TEMPLATES[symbol]
     if group.joint:
         template = JOINTS.get(symbol, template)

@@ -22,7 +22,13 @@ def mode_geometry(model: Model, width: float, height: float) -> SheetGeometry:
     return bare_geometry(model, (width, height), area, None, grow)
 
 
+def still_picture(geometry: SheetGeometry) -> Drawing:
+    """Return what lies under every frame: the ghost at rest, ground and axes; paint it once."""
+    under = ground_items(geometry) + ghost_items(geometry) + axis_items(geometry) + train_items(geometry)
+    return sheet_of(under, geometry.width, geometry.height, 1.0)
+
+
 def mode_picture(geometry: SheetGeometry, posed: Pose, factor: complex) -> Drawing:
     """Return the model at ``factor`` (see ``motion.frame``) times the mode, over its ghost at rest."""
-    under = ground_items(geometry) + ghost_items(geometry) + axis_items(geometry) + train_items(geometry)
-    return sheet_of(under + frame(geometry, posed, factor).items, geometry.width, geometry.height, 1.0)
+    items = still_picture(geometry).items + frame(geometry, posed, factor).items
+    return sheet_of(items, geometry.width, geometry.height, 1.0)

@@ -1,12 +1,13 @@
 """The sheet in motion: a mode's displacement of every point once, then one product per frame."""
 
 from dataclasses import dataclass
+from typing import Any
 
 import numpy as np
 import numpy.typing as npt
 
 from modalview.drawing.furniture import TitleLines, sheet_of
-from modalview.drawing.geometry import SheetGeometry
+from modalview.drawing.geometry import LinkGroup, SheetGeometry
 from modalview.drawing.layout import GROUND
 from modalview.drawing.model_items import (
     FULL,
@@ -23,7 +24,7 @@ from modalview.drawing.primitives import Circles, Drawing, Floats, Item, Lines, 
 from modalview.drawing.symbols import arrow, turning_arrow
 from modalview.model.parts import Motion
 
-Phased = npt.NDArray[np.float64] | npt.NDArray[np.complex128]
+Phased = npt.NDArray[np.inexact[Any]]  # real, or complex where parts move out of step
 
 STILL = 0.02  # of the largest motion: below it a part counts as standing still
 DIAL_SWING = np.radians(55.0)  # of the largest rotation at amplitude 1
@@ -45,12 +46,15 @@ class Pose:
         Rotation in the plane of the sheet (about the shaft in a train) over the largest one, -1..1.
     sizes : array (bodies,)
         Largest motion of any point of the body over the largest of all, 0..1.
+    slopes : tuple of array (n, 2, 2) or None
+        For each group of links: of beams, pixels that the rotation of each end alone would move the other.
     """
 
     steps: Phased
     centre_steps: Phased
     turns: Phased
     sizes: Floats
+    slopes: tuple[Phased | None, ...] = ()
 
 
 def pose(geometry: SheetGeometry, motion: Phased) -> Pose:
@@ -68,8 +72,7 @@ def pose(geometry: SheetGeometry, motion: Phased) -> Pose:
     Displacements are linear in the amplitude, as the mode itself is: a point at arm r moves by
     u + theta x r.
     """
-    kind = complex if np.iscomplexobj(motion) else float
-    motion = np.asarray(motion, dtype=kind).reshape(-1, 6)
+    motion = _as_motion(motion)
     points, train = geometry.points, geometry.train
     count = len(geometry.centres)
     if not count:
@@ -88,8 +91,25 @@ def pose(geometry: SheetGeometry, motion: Phased) -> Pose:
     np.maximum.at(sizes, points.bodies[moving], lengths[moving] / largest)
     about = 2 if geometry.model.motion is not Motion.SPACE else 1
     turns = np.zeros(count) if geometry.model.motion is Motion.SPACE else _over_largest(motion[:, 3 + about])
-    steps *= geometry.reach / largest
-    return Pose(steps, steps[geometry.centres], turns, sizes)
+    times = geometry.reach / largest
+    steps = times * steps
+    slopes = tuple(_slopes(geometry, group, motion, times) for group in geometry.links)
+    return Pose(steps, steps[geometry.centres], turns, sizes, slopes)
+
+
+def _as_motion(motion: Phased) -> Phased:
+    if np.iscomplexobj(motion):
+        return np.asarray(motion, dtype=np.complex128).reshape(-1, 6)
+    return np.asarray(motion, dtype=np.float64).reshape(-1, 6)
+
+
+def _slopes(geometry: SheetGeometry, group: LinkGroup, motion: Phased, times: float) -> Phased | None:
+    if group.spans is None:
+        return None
+    bodies = geometry.points.bodies[group.ends]
+    turns = np.where((bodies == GROUND)[..., None], 0.0, motion[bodies, 3:])
+    slopes: Phased = times * geometry.view.steps(np.cross(turns, group.spans[:, None]))
+    return slopes
 
 
 def frame(geometry: SheetGeometry, posed: Pose, factor: complex) -> Drawing:
@@ -98,7 +118,8 @@ def frame(geometry: SheetGeometry, posed: Pose, factor: complex) -> Drawing:
     Only arrays are computed and no text is laid out; names inside bodies move with them.
     """
     points = geometry.points.rest + np.real(factor * posed.steps)
-    items = part_items(geometry, points)
+    slopes = tuple(None if one is None else np.real(factor * one) for one in posed.slopes)
+    items = part_items(geometry, points, slopes)
     if geometry.train is not None:
         items += _twist(geometry, posed, factor)
     items += label_items(geometry, np.real(factor * posed.centre_steps) if geometry.train is None else None)

@@ -3,12 +3,15 @@
 from dataclasses import dataclass
 
 import numpy as np
+import numpy.typing as npt
 
 from modalview.drawing.layout import Layout
 from modalview.drawing.primitives import Floats
 from modalview.drawing.view import View
 from modalview.model.gears import gear_ratio
 from modalview.model.parts import Body, Gear, InertiaTensor, Model, Motion
+
+Truths = npt.NDArray[np.bool_]
 
 # Sizes in pixels of a body that nothing else gives a size.
 WIDTH, HEIGHT = 148.0, 58.0
@@ -50,9 +53,8 @@ def outlines(model: Model, places: Layout, view: View, grow: float = 1.0) -> Out
     if model.motion is Motion.SHAFT_TRAIN:
         high = _discs(model, places, view, shapes, grow)
         return Outlines(-high, high, shapes)
-    low, high = np.zeros((2, len(shapes), 3))
+    low, high = _extents(model, places, view, shapes, grow)
     for number, body in enumerate(model.bodies):
-        low[number], high[number] = _extent(model, number, places, view, shapes[number], grow)
         _as_drawn(body, model.motion, low[number], high[number])
     return Outlines(low, high, shapes)
 
@@ -98,58 +100,77 @@ def _as_drawn(body: Body, motion: Motion, low: Floats, high: Floats) -> None:
             low[axis], high[axis] = -length.si / 2, length.si / 2
 
 
-def _extent(
-    model: Model, number: int, places: Layout, view: View, shape: str, grow: float
+def _extents(
+    model: Model, places: Layout, view: View, shapes: tuple[str, ...], grow: float
 ) -> tuple[Floats, Floats]:
+    """Return the corners of all bodies: as preferred, widened to what is attached to them."""
     upright = 2 if model.motion is Motion.SPACE else 1
     scales = np.array([view.scale_x, view.scale_y, view.scale_y])
-    if shape == "point":
-        half = POINT * grow / scales
-        return -half, half
-    arms = places.ends[places.end_bodies == number] - places.centres[number]
-    half = _preferred(number, places, upright, scales, grow)
+    half = _preferred(places, upright, scales, grow)
     low, high = -half, half.copy()
-    least = LEAST * grow / 2 / scales
+    least_reach, most_reach, attached = _arms(places)
     for axis in range(3):
-        if not len(arms) or ((axis == 2) != (upright == 2) and axis == 2):
+        if axis == 2 and upright != 2:
             continue
-        reach = arms[:, axis]
         if axis == upright:
-            low[axis], high[axis] = _upright(reach, half[axis], least[axis])
+            limits = _upright(
+                least_reach[:, axis], most_reach[:, axis], half[:, axis], LEAST * grow / 2 / scales[axis]
+            )
         else:
             pad = PAD * grow / scales[axis]
-            low[axis] = min(low[axis], reach.min() - pad)
-            high[axis] = max(high[axis], reach.max() + pad)
+            limits = (
+                np.minimum(low[:, axis], least_reach[:, axis] - pad),
+                np.maximum(high[:, axis], most_reach[:, axis] + pad),
+            )
+        low[attached, axis], high[attached, axis] = limits[0][attached], limits[1][attached]
+    points = np.array([shape == "point" for shape in shapes], dtype=bool)
+    low[points], high[points] = -POINT * grow / scales, POINT * grow / scales
     return low, high
 
 
-def _upright(reach: Floats, half: float, least: float) -> tuple[float, float]:
+def _arms(places: Layout) -> tuple[Floats, Floats, Truths]:
+    """Return least and greatest arm of what is attached to each body (bodies, 3), and which hold anything."""
+    count = len(places.centres)
+    bodies = places.end_bodies.ravel()
+    held = bodies >= 0
+    bodies = bodies[held]
+    arms = places.ends.reshape(-1, 3)[held] - places.centres[bodies]
+    least, most = np.full((count, 3), np.inf), np.full((count, 3), -np.inf)
+    np.minimum.at(least, bodies, arms)
+    np.maximum.at(most, bodies, arms)
+    attached = np.isfinite(least[:, 0])
+    least[~attached], most[~attached] = 0.0, 0.0
+    return least, most, attached
+
+
+def _upright(least_reach: Floats, most_reach: Floats, half: Floats, least: float) -> tuple[Floats, Floats]:
     """Let a body end at its lowest and highest attachment; where one is missing, mirror the other."""
-    below, above = -float(reach.min()), float(reach.max())
-    if below > least and above > least:
-        return -below, above
-    if below > least:
-        return -below, below
-    return (-above, above) if above > least else (-half, half)
+    below, above = -least_reach, most_reach
+    low = np.where(below > least, below, np.where(above > least, above, half))
+    high = np.where(above > least, above, np.where(below > least, below, half))
+    return -low, high
 
 
-def _preferred(number: int, places: Layout, upright: int, scales: Floats, grow: float) -> Floats:
-    """Return half sizes that leave room for the neighbours and for the springs between rows."""
-    half = np.array([WIDTH, HEIGHT, HEIGHT]) * grow / 2 / scales
+def _preferred(places: Layout, upright: int, scales: Floats, grow: float) -> Floats:
+    """Return half sizes (bodies, 3) that leave room for the neighbours and for the springs between rows."""
+    count = len(places.centres)
+    half = np.tile(np.array([WIDTH, HEIGHT, HEIGHT]) * grow / 2 / scales, (count, 1))
     if upright == 2:
-        half[1] = 0.6 * half[0]
-    steps = np.abs(np.delete(places.centres, number, axis=0) - places.centres[number])
-    row = steps[:, upright] < half[upright]
-    for axis, near, share in ((0, row, ROOM), (upright, ~row, ROOM_ABOVE)):
-        others = steps[near, axis]
-        others = others[others > 0]
-        if len(others):
-            half[axis] = min(half[axis], share * others.min())
-    links = places.ends[(places.end_bodies == number).any(axis=1)]
-    spans = np.abs(links[:, 0, upright] - links[:, 1, upright])
-    spans = spans[spans > 0]
-    if len(spans):
-        half[upright] = min(half[upright], max(ROOM_ABOVE * spans.min(), LEAST / 2 / scales[upright] * grow))
+        half[:, 1] = 0.6 * half[:, 0]
+    if not count:
+        return half
+    steps = np.abs(places.centres[:, None] - places.centres[None])
+    abreast = steps[:, :, upright] < half[:, None, upright]
+    for axis, near, share in ((0, abreast, ROOM), (upright, ~abreast, ROOM_ABOVE)):
+        others = np.where(near & (steps[:, :, axis] > 0), steps[:, :, axis], np.inf).min(axis=1)
+        half[:, axis] = np.minimum(half[:, axis], share * others)
+    spans = np.abs(places.ends[:, 0, upright] - places.ends[:, 1, upright])
+    shortest = np.full(count, np.inf)
+    for side in (0, 1):
+        counted = (spans > 0) & (places.end_bodies[:, side] >= 0)
+        np.minimum.at(shortest, places.end_bodies[counted, side], spans[counted])
+    least = LEAST / 2 / scales[upright] * grow
+    half[:, upright] = np.minimum(half[:, upright], np.maximum(ROOM_ABOVE * shortest, least))
     return half
 
 

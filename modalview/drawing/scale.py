@@ -5,7 +5,7 @@ from dataclasses import dataclass
 import numpy as np
 
 from modalview.drawing.axis import Axis, spread
-from modalview.drawing.captions import shortened
+from modalview.drawing.captions import in_two, shortened
 from modalview.drawing.labels import Board, Line, Spot
 from modalview.drawing.primitives import Anchor, Box, Circles, Drawing, Item, Lines, Role, Size, Text
 from modalview.drawing.scalecontent import ScaleBand, ScaleContent, ScaleCount, ScaleMode
@@ -170,22 +170,11 @@ def _band_label(frame: _Frame, band: ScaleBand) -> list[Text]:
     room = (frame.labels - frame.left - 8) / BOLD
     line = tuple(
         Line(shortened(part, room, Size.SMALL, frame.text_scale), Role.WARN, Size.SMALL, bold=True)
-        for part in _in_two(band.label, room, frame.text_scale)
+        for part in in_two(band.label, room, frame.text_scale)
     )
     own, gap = frame.axis.y_of(band.to), 2.5 + frame.board.size(line)[1] / 2
     beside = [Spot(frame.left + 6, own - gap, 1, 0), Spot(frame.left + 6, own + gap, 1, 0)]
     return frame.board.place(line, beside) or _labelled(frame, line, own - gap)
-
-
-def _in_two(text: str, room: float, text_scale: float) -> tuple[str, ...]:
-    """Break a text that is wider than its room after the last word that fits."""
-    words = text.split()
-    if len(words) < 2 or text_width(text, Size.SMALL, text_scale=text_scale) <= room:
-        return (text,)
-    heads = [" ".join(words[:count]) for count in range(1, len(words))]
-    fitting = [head for head in heads if text_width(head, Size.SMALL, text_scale=text_scale) <= room]
-    head = fitting[-1] if fitting else heads[0]
-    return head, text[len(head) :].strip()
 
 
 def _labelled(frame: _Frame, lines: tuple[Line, ...], y: float) -> list[Text]:

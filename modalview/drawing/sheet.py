@@ -3,7 +3,7 @@
 import numpy as np
 
 from modalview.drawing.excitations import lines_above
-from modalview.drawing.furniture import TitleLines, sheet_of, title_lines, title_size
+from modalview.drawing.furniture import MARGIN, TitleLines, sheet_of, title_lines, title_size
 from modalview.drawing.geometry import SheetGeometry, bare_geometry
 from modalview.drawing.layout import GROUND
 from modalview.drawing.lettering import lettered
@@ -22,7 +22,9 @@ from modalview.model.parts import Model
 
 __all__ = ["SheetGeometry", "TitleLines", "part_at", "sheet_drawing", "sheet_geometry", "title_lines"]
 
-SIDE, BOTTOM = 110.0, 84.0  # pixels kept free for labels, and for ground and player
+SIDE, BOTTOM = 110.0, 46.0  # pixels kept free for labels, and for ground
+# Of the sheet, what the model is fitted into at least: labels fall away before it shrinks.
+LEAST_WIDE, LEAST_HIGH = 0.6, 0.5
 NEAR_LINK = 9.0  # pixels: how close to a link's line a click may be
 
 
@@ -40,8 +42,10 @@ def sheet_geometry(
     view : View or None
         None fits the model; else what ``geometry.view.panned`` or ``zoomed`` gave.
     """
-    side = min(SIDE * text_scale, 0.2 * width)
-    top = title_size(model.title, width, text_scale)[1] + (66.0 + 17.0 * lines_above(model)) * text_scale
+    side = min(SIDE * text_scale, (1 - LEAST_WIDE) / 2 * width)
+    block = MARGIN + title_size(model.title, width, text_scale)[1]
+    arrows = (56.0 if lines_above(model) else 8.0) + 17.0 * lines_above(model) * text_scale
+    top = min(block + arrows, max((1 - LEAST_HIGH) * height - BOTTOM, block + 4.0))
     area = (side, top, max(width - 2 * side, 40.0), max(height - top - BOTTOM, 40.0))
     return lettered(bare_geometry(model, (width, height), area, view, 1.0, text_scale))
 

@@ -55,13 +55,16 @@ _RIGID = np.array([[0.0, -2.5, 1.0, -2.5], [0.0, 2.5, 1.0, 2.5]])
 _LINE = np.array([[0.0, 0.0, 1.0, 0.0]])
 _NOTHING = np.zeros((0, 4))
 
+BEAM_WIDTH = 4.5  # pixels
+BEAM_PIECES = 14  # straight ones of a bent beam
+
 # Segments in (share of the link's length, pixels to its left); and the width of the line.
 TEMPLATES: dict[Symbol, tuple[Floats, float]] = {
     Symbol.SPRING: (_SPRING, 1.4),
     Symbol.DAMPER: (_DAMPER, 1.4),
     Symbol.MOUNT: (_MOUNT, 1.4),
     Symbol.SHAFT: (_SHAFT, 1.4),
-    Symbol.BEAM: (_LINE, 4.5),
+    Symbol.BEAM: (_LINE, BEAM_WIDTH),
     Symbol.RIGID: (_RIGID, 2.2),
     Symbol.GEAR: (_NOTHING, 1.0),
 }
@@ -118,6 +121,31 @@ def between(template: Floats, ends: Floats, thick: float = 1.0) -> Floats:
     return lines
 
 
+def bent(rest: Floats, moved: Floats, slopes: Floats) -> Floats:
+    """Return the segments of beams that follow displacement and rotation of both ends: cubics.
+
+    Parameters
+    ----------
+    rest : array (n, 2, 2)
+        Ends at rest, pixels.
+    moved : array (n, 2, 2)
+        Their displacements.
+    slopes : array (n, 2, 2)
+        How far the rotation of each end alone would move the other one.
+
+    Notes
+    -----
+    A slender beam without load between its ends bends to the cubic fixed by both ends (Euler-Bernoulli).
+    """
+    t = np.linspace(0.0, 1.0, BEAM_PIECES + 1)[None, :, None]
+    shape = (1 - 3 * t**2 + 2 * t**3) * moved[:, None, 0] + (3 * t**2 - 2 * t**3) * moved[:, None, 1]
+    # A rotation of the far end moves the near one the other way round: its slope along the beam is the same.
+    shape = shape + (t - 2 * t**2 + t**3) * slopes[:, None, 0] + (t**3 - t**2) * slopes[:, None, 1]
+    line = rest[:, None, 0] + t * (rest[:, None, 1] - rest[:, None, 0]) + shape
+    lines: Floats = np.concatenate([line[:, :-1], line[:, 1:]], axis=2).reshape(-1, 4)
+    return lines
+
+
 def ground(feet: Floats, outward: Floats, half: float = 20.0) -> Floats:
     """Return the segments of ground symbols: a line across, hatched on the far side.
 
@@ -143,14 +171,17 @@ def ground(feet: Floats, outward: Floats, half: float = 20.0) -> Floats:
 
 def dashed(segments: Floats, dash: float = 5.0, gap: float = 4.0) -> Floats:
     """Cut segments (n, 4) into dashes, so that no pen has to; lengths in pixels."""
-    pieces = []
-    for x1, y1, x2, y2 in segments.tolist():
-        length = float(np.hypot(x2 - x1, y2 - y1))
-        starts = np.arange(0.0, length, dash + gap)
-        shares = np.stack([starts, np.minimum(starts + dash, length)], axis=1) / (length or 1.0)
-        step = np.array([x2 - x1, y2 - y1])
-        pieces.append(np.array([x1, y1]) + shares[:, :, None] * step)
-    return np.concatenate(pieces).reshape(-1, 4) if pieces else np.zeros((0, 4))
+    steps = segments[:, 2:] - segments[:, :2]
+    lengths = np.hypot(steps[:, 0], steps[:, 1])
+    counts = np.ceil(lengths / (dash + gap)).astype(int)
+    rows = np.repeat(np.arange(len(segments)), counts)
+    ranks = np.arange(len(rows)) - np.repeat(np.cumsum(counts) - counts, counts)
+    starts = ranks * (dash + gap)
+    stops = np.minimum(starts + dash, lengths[rows])
+    unit = steps[rows] / lengths[rows, None]
+    corner = segments[rows, :2]
+    lines: Floats = np.hstack([corner + starts[:, None] * unit, corner + stops[:, None] * unit])
+    return lines
 
 
 def outline(corners: Floats) -> Floats:

@@ -26,6 +26,7 @@ _RADIUS = 6.0
 _SMALL = 0.88  # of the text size
 _PALE = 0.55  # of a picture that is out of date
 _BARS = 3
+_LEAST_PICTURE = 24  # pixels of height
 # Least and greatest width of a card, in heights of a line.
 _WIDTHS = (15.2, 19.0)
 _LEFT = Qt.AlignmentFlag.AlignLeft | Qt.AlignmentFlag.AlignVCenter
@@ -120,8 +121,10 @@ class ModeCard(QStyledItemDelegate):
         inner = box.adjusted(10, 7, -10, -7)
         below = self._paint_head(painter, inner, mode, now)
         above = self._paint_shares(painter, inner, mode)
+        place = QRectF(inner.left(), below, inner.width(), above - below)
+        self._paint_under(painter, place, now)
         painter.end()
-        return pixmap, QRectF(inner.left(), below, inner.width(), above - below)
+        return pixmap, place
 
     def _paint_frame(self, painter: QPainter, box: QRectF, now: "_Now") -> None:
         painter.setBrush(QColor(self._theme.card))
@@ -212,22 +215,41 @@ class ModeCard(QStyledItemDelegate):
         )
         self._write(painter, row, percent(share.fraction), self._theme.quiet, font, _RIGHT)
 
-    def _paint_picture(self, painter: QPainter, place: QRectF, mode: Any) -> None:
-        if place.height() < 24 or self._model is None:
-            return
-        from modalview.drawing import modepicture, motion  # noqa: PLC0415  (numpy comes after the first paint)
-
+    def _geometry(self, place: QRectF) -> tuple[tuple[int, int], Any]:
+        """Return the size of a small picture and its geometry; None where it has no room."""
         size = (round(place.width()), round(place.height()))
-        small = self._small.get(size)
+        if place.height() < _LEAST_PICTURE or self._model is None:
+            return size, None
+        from modalview.drawing import modepicture  # noqa: PLC0415  (numpy comes after the first paint)
+
+        if size not in self._small:
+            self._small[size] = modepicture.mode_geometry(self._model, *size)
+        return size, self._small[size]
+
+    def _paint_under(self, painter: QPainter, place: QRectF, now: "_Now") -> None:
+        """Paint what lies under every frame of a small picture."""
+        _, small = self._geometry(place)
         if small is None:
-            small = self._small[size] = modepicture.mode_geometry(self._model, *size)
+            return
+        from modalview.drawing import modepicture  # noqa: PLC0415  (see above)
+
+        painter.setOpacity(1.0 if now.current else _PALE)
+        painter.translate(place.topLeft())
+        paint_drawing(painter, modepicture.still_picture(small), self._theme)
+
+    def _paint_picture(self, painter: QPainter, place: QRectF, mode: Any) -> None:
+        size, small = self._geometry(place)
+        if small is None:
+            return
+        from modalview.drawing import motion  # noqa: PLC0415  (see above)
+
         posed = self._posed.get((mode.number, size))
         if posed is None:
             posed = self._posed[mode.number, size] = motion.pose(small, mode.motion)
         painter.translate(place.topLeft())
         fading = getattr(mode, "overdamped", False)
         factor = self._swing.fading() if fading else self._swing.factor()
-        paint_drawing(painter, modepicture.mode_picture(small, posed, factor), self._theme)
+        paint_drawing(painter, motion.frame(small, posed, factor), self._theme)
         painter.translate(-place.topLeft())
 
     @staticmethod

@@ -15,6 +15,8 @@ class Pages(QWidget):
         super().__init__(parent)
         self.tabs = QTabBar(self)
         self.tabs.setDrawBase(False)
+        self.tabs.setExpanding(False)
+        self.tabs.setUsesScrollButtons(False)
         self.tabs.setAccessibleName(accessible_name)
         self.tabs.setSizePolicy(QSizePolicy.Policy.Minimum, QSizePolicy.Policy.Preferred)
         self.line = ElidedLabel(self)
