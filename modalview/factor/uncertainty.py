@@ -141,27 +141,28 @@ class Extents:
 
 def extents_of(parts: PencilParts, pattern: Pattern, margin: float) -> Extents:
     """Gather what the uncertainty at every shift is made of; ``margin`` is infinite without massless ones."""
-    massless, formation = parts.massless, parts.formation
-    absolute = sp.csr_array(abs(parts.basis))
-    reach: Array = np.asarray(absolute.sum(axis=1), dtype=float).ravel()
+    massless, formation, basis = parts.massless, parts.formation, parts.basis
+    size, place = np.abs(basis.data), pattern.place
+    reach: Array = np.bincount(basis.indices, size, pattern.n).astype(float, copy=False)
     held = np.zeros(pattern.n)
     diagonal = parts.K.diagonal()[massless]
     held[massless] = 1 / np.sqrt(np.where(diagonal > 0, diagonal, np.inf))
     share = gamma(2) + (gamma(parts.terms + 2) if parts.terms else 0.0)
-    order = np.argsort(pattern.place)
-    basis_t = sp.csr_array(absolute[order].T)
-    formed = share * (formation @ reach)[order]
+    order = np.argsort(place)
+    stretched = (formation @ reach)[order]
+    # the columns of W are the rows of its transpose: only their places are renamed
+    basis_t = sp.csr_array((size, place[basis.indices], basis.indptr), shape=basis.shape[::-1])
     inertial = gamma(2) * (abs(parts.M) @ reach)[order]
     return Extents(
         basis_t=basis_t,
         reach=reach[order],
         held=held[order],
-        formed=formed,
+        formed=share * stretched,
         formed_held=share * (formation @ held)[order],
         inertial=inertial,
         margin=margin,
-        pressed=(basis_t @ formed, basis_t @ inertial),
-        top=SLACK * float((absolute.T @ (formation @ reach)).max()),
+        pressed=(basis_t @ (share * stretched), basis_t @ inertial),
+        top=SLACK * float((basis_t @ stretched).max()),
     )
 
 
