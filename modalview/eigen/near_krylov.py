@@ -18,7 +18,7 @@ FOUND = 1e-12
 # The mode after the last wanted one only tells how far the gap reaches.
 FORESEEN = 1e-4
 # Dimensions between two tests of convergence, and before the rate is known.
-LEAST_STEP, MOST_STEP = 2, 20
+LEAST_STEP, MOST_STEP = 2, 8
 # Columns by which storage grows.
 GROWTH = 32
 
