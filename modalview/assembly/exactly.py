@@ -68,7 +68,7 @@ class ExactForms:
     def __init__(self, assembly: Assembly) -> None:
         self._n = assembly.n
         self._rounded: dict[str, None] = {}
-        self._values = {p.id: self._cases(p) for p in assembly.parameters}
+        self._values = {p.id: self._cases(p) for p in assembly.parameters if p.family != "damping"}
         motions = exact_motions(assembly.structure.coordinates, assembly.model)
         massless = {i for i, none in enumerate(assembly.structure.coordinates.massless) if none}
         self._stiffness = [
