@@ -37,8 +37,8 @@ class Factors:
     lower_indices: npt.NDArray[np.int32]
     upper_indptr: npt.NDArray[np.int32]
     upper_indices: npt.NDArray[np.int32]
-    mirror: Indices
-    columns: Indices
+    mirror: npt.NDArray[np.int32]
+    columns: npt.NDArray[np.int32]
     diagonal: Indices
 
     def describe(self, lu: "SuperLU[np.float64]") -> bool:
@@ -171,17 +171,18 @@ def _reference(keys: npt.NDArray[np.int64], n: int) -> sp.csc_array:
 
 
 def _factors(lu: "SuperLU[np.float64]") -> Factors | None:
+    """Match the entries of L and U; on large models this is what needs most memory, hence 32 bits."""
     lower, upper = lu.L, lu.U
-    n = lower.shape[0]
-    below, columns = _coordinates(lower)
-    right_of, across = _coordinates(upper)
-    lower_keys = columns.astype(np.int64) * n + below
-    upper_keys = right_of.astype(np.int64) * n + across
-    lower_order, upper_order = np.argsort(lower_keys), np.argsort(upper_keys)
-    if not np.array_equal(lower_keys[lower_order], upper_keys[upper_order]):
+    first, second = _positions(lower), _positions(upper)
+    across = sp.csr_array(second)  # by rows of U, as L goes by columns
+    by_column = sp.csc_array(sp.csr_array(first))  # L with rows ascending in every column
+    if not (
+        np.array_equal(by_column.indptr, across.indptr) and np.array_equal(by_column.indices, across.indices)
+    ):
         return None
-    mirror = np.empty(lower.nnz, dtype=np.intp)
-    mirror[lower_order] = upper_order
+    mirror = np.empty(lower.nnz, dtype=np.int32)
+    mirror[by_column.data] = across.data
+    columns = np.repeat(np.arange(lower.shape[1], dtype=np.int32), np.diff(lower.indptr))
     return Factors(
         lower_indptr=lower.indptr,
         lower_indices=lower.indices,
@@ -189,5 +190,11 @@ def _factors(lu: "SuperLU[np.float64]") -> Factors | None:
         upper_indices=upper.indices,
         mirror=mirror,
         columns=columns,
-        diagonal=np.flatnonzero(below == columns),
+        diagonal=np.flatnonzero(lower.indices == columns),
     )
+
+
+def _positions(matrix: sp.csc_array) -> sp.csc_array:
+    """Return a matrix of this pattern whose entries are their own places among the stored ones."""
+    places = np.arange(matrix.nnz, dtype=np.int32)
+    return sp.csc_array((places, matrix.indices, matrix.indptr), shape=matrix.shape)
