@@ -9,12 +9,18 @@ import numpy.typing as npt
 import scipy.sparse as sp
 from scipy.sparse.linalg import SuperLU, splu
 
+from modalview.factor.dissection import dissection
+
 Array = npt.NDArray[np.float64]
 Indices = npt.NDArray[np.intp]
 
 # Columns SuperLU updates together, and the subtree it merges into one supernode; measured best from n = 10
 # to 1e4 on chains and plane models (the library's own 20 and 10 cost a tenth to a half more).
 PANEL, RELAX = 4, 10
+
+# From this size on, where minimum degree leaves more entries a column in each factor than this, nested
+# dissection is tried beside it.
+LARGE, HEAVY = 30_000, 30
 
 
 @dataclass(frozen=True, slots=True, eq=False)
@@ -112,7 +118,7 @@ class Pattern:
 
 
 def union_pattern(K: sp.csc_array, M: sp.csc_array) -> Pattern:
-    """Order the union of two symmetric patterns by minimum degree and find what its factors look like.
+    """Order the union of two symmetric patterns to keep its factors sparse and find what they look like.
 
     Parameters
     ----------
@@ -130,10 +136,7 @@ def union_pattern(K: sp.csc_array, M: sp.csc_array) -> Pattern:
     rows = np.concatenate([pair[0] for pair in pairs])
     cols = np.concatenate([pair[1] for pair in pairs])
     first = np.unique(cols.astype(np.int64) * n + rows)
-    stored = _splu(_reference(first, n), "MMD_AT_PLUS_A").perm_c.astype(np.intp)
-    keys = np.sort(stored[first // n].astype(np.int64) * n + stored[first % n])
-    reference = _reference(keys, n)
-    lu = _splu(reference, "NATURAL")
+    stored, keys, reference, lu = _ordered(first, n)
     return Pattern(
         stored=stored,
         turned=lu.perm_c.astype(np.intp),
@@ -144,6 +147,30 @@ def union_pattern(K: sp.csc_array, M: sp.csc_array) -> Pattern:
         terms=np.bincount(lu.L.indices, minlength=n),
         template=reference,
     )
+
+
+def _ordered(
+    first: npt.NDArray[np.int64], n: int
+) -> tuple[Indices, npt.NDArray[np.int64], sp.csc_array, "SuperLU[np.float64]"]:
+    """Order by minimum degree, or by nested dissection where that fills less, and factor the reference."""
+    unordered = _reference(first, n)
+    lu = _splu(unordered, "MMD_AT_PLUS_A")
+    stored = lu.perm_c.astype(np.intp)
+    if n > LARGE and lu.nnz > 2 * HEAVY * n:
+        dissected = np.argsort(dissection(unordered))
+        keys, reference = _stored(first, n, dissected)
+        other = _splu(reference, "NATURAL")
+        if other.nnz < lu.nnz:
+            return dissected, keys, reference, other
+    keys, reference = _stored(first, n, stored)
+    return stored, keys, reference, _splu(reference, "NATURAL")
+
+
+def _stored(
+    first: npt.NDArray[np.int64], n: int, stored: Indices
+) -> tuple[npt.NDArray[np.int64], sp.csc_array]:
+    keys = np.sort(stored[first // n].astype(np.int64) * n + stored[first % n])
+    return keys, _reference(keys, n)
 
 
 def _splu(matrix: sp.csc_array, ordering: Literal["NATURAL", "MMD_AT_PLUS_A"]) -> "SuperLU[np.float64]":
