@@ -229,7 +229,7 @@ class Search:
         order = near[np.argsort(self.values[near], kind="stable")]
         vectors, pencil = self.locked[:, order], self.pencil
         if order.size and pencil.stiffness is not None and not np.any(pencil.stiffness < 0):
-            _, triangle = np.linalg.qr(pencil.factor @ vectors)
+            triangle = np.asarray(np.linalg.qr(pencil.factor @ vectors, mode="r"), dtype=float)
             _, turn = singular_pairs(triangle)
             vectors = vectors @ turn
         elif order.size:
