@@ -5,6 +5,8 @@ from itertools import pairwise
 
 import numpy as np
 
+from modalview.drawing.primitives import Floats
+
 # Steps of a decade, from fine to coarse; the finest whose labels stay apart is taken.
 _STEPS = (
     (1.0, 1.2, 1.5, 2.0, 2.5, 3.0, 4.0, 5.0, 6.0, 7.0, 8.0),
@@ -41,6 +43,12 @@ class Axis:
         share = np.log(kept / self.low_hz) / np.log(self.high_hz / self.low_hz)
         return float(self.bottom - share * (self.bottom - self.top))
 
+    def ys_of(self, hz: Floats) -> Floats:
+        """Return the pixels of many frequencies, kept on the axis."""
+        kept = np.clip(hz, self.low_hz, self.high_hz)
+        share = np.log(kept / self.low_hz) / np.log(self.high_hz / self.low_hz)
+        return np.asarray(self.bottom - share * (self.bottom - self.top))
+
     def hz_at(self, y: float) -> float:
         """Return the frequency of a pixel."""
         share = (self.bottom - y) / (self.bottom - self.top)
@@ -60,6 +68,21 @@ class Axis:
         first, last = (int(np.floor(np.log10(hz))) for hz in (self.low_hz, self.high_hz))
         every = [float(f"{step}e{power}") for power in range(first, last + 1) for step in steps]
         return [hz for hz in every if self.low_hz * 0.9999 <= hz <= self.high_hz * 1.0001]
+
+
+def merged(low: Floats, high: Floats) -> Floats:
+    """Return intervals (n, 2) that overlap as one, ascending.
+
+    >>> merged(np.array([1.0, 4.0, 2.0]), np.array([3.0, 5.0, 2.5])).tolist()
+    [[1.0, 3.0], [4.0, 5.0]]
+    """
+    if not len(low):
+        return np.zeros((0, 2))
+    order = np.argsort(low, kind="stable")
+    low, reached = low[order], np.maximum.accumulate(high[order])
+    starts = np.flatnonzero(np.concatenate([[True], low[1:] > reached[:-1]]))
+    ends = np.append(starts[1:], len(low)) - 1
+    return np.column_stack([low[starts], reached[ends]])
 
 
 def spread(wanted: list[float], apart: float, low: float, high: float) -> list[float]:

@@ -127,6 +127,9 @@ def _name_bodies(geometry: SheetGeometry, board: Board, inner: Board, letters: _
         name, *values = body_lines(geometry.model, body)
         title = (Line(name, bold=True),)
         whole = title + tuple(Line(text, Role.MUTED) for text in (() if many else values))
+        if many and not _fits_in(geometry, board, number, title):
+            letters.unlabelled.append(body.id)
+            continue
         if geometry.text_scale > LARGE_TEXT and not _fits_in(geometry, board, number, whole):
             whole = title
         placed = _by_body(geometry, (board, inner), number, whole)
@@ -161,7 +164,8 @@ def _by_body(
         placed = board.place(lines, _by_disc(geometry, number))
         if placed:
             return placed
-    if len(geometry.model.bodies) > CROWD and len(lines) > 1:
+    count = len(geometry.model.bodies)
+    if count > MOST_LABELS or (count > CROWD and len(lines) > 1):
         return []
     return board.place(lines, round_about(_rectangle(geometry.boxes[number]), 12.0), sway=_sway(geometry))
 

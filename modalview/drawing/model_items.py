@@ -13,6 +13,7 @@ from modalview.drawing.symbols import (
     COARSE,
     JOINTS,
     MANY,
+    STRAIGHT,
     TEMPLATES,
     Symbol,
     bent,
@@ -25,6 +26,8 @@ from modalview.model.parts import Motion
 
 MARK = 5.5  # radius of the centre of gravity mark, pixels
 DOT = 3.4  # radius of a rigid link's ends
+SEVERAL = 20  # bodies: more are filled and outlined together
+CROWDED = 40  # bodies in a small picture: more are drawn without filling
 FULL = 0.8  # below this size, symbols are simplified
 
 
@@ -49,9 +52,13 @@ def part_items(
 def _bodies(geometry: SheetGeometry, points: Floats) -> list[Item]:
     # Parts behind a body in space shimmer through, as hidden edges are told by faint lines.
     fill = 0.86 if geometry.model.motion is Motion.SPACE else 1.0
-    if len(geometry.centres) > MANY:
+    if geometry.grow < FULL and len(geometry.centres) > CROWDED:  # a few pixels each: outlines alone
+        return [Lines(outline(points[indices]), Role.INK, 1.0) for indices in geometry.faces]
+    apart = geometry.model.motion is not Motion.SPACE  # nothing hides behind anything
+    if len(geometry.centres) > (SEVERAL if apart else MANY):
         fills = [Polygons(points[indices], None, Role.PAPER, 0.0, fill) for indices in geometry.faces]
-        return [*fills, *(Lines(outline(points[indices]), Role.INK, 1.0) for indices in geometry.faces)]
+        line = 1.0 if len(geometry.centres) > MANY else 1.5
+        return [*fills, *(Lines(outline(points[indices]), Role.INK, line) for indices in geometry.faces)]
     width = 1.7 if geometry.grow >= FULL else 1.3
     return [Polygons(points[indices], Role.INK, Role.PAPER, width, fill) for indices in geometry.faces]
 
@@ -140,6 +147,8 @@ def _link(geometry: SheetGeometry, group: LinkGroup, points: Floats, slopes: Flo
     template, width = TEMPLATES[symbol]
     if group.joint:
         template = JOINTS.get(symbol, template)
+    elif geometry.grow < FULL and len(ends) > MANY:
+        template, width = STRAIGHT, 1.0
     elif len(ends) > MANY:
         template, width = COARSE.get(symbol, template), min(width, 1.0)
     items: list[Item] = [Lines(between(template, ends, grow), Role.INK, max(width * grow, 1.0))]

@@ -4,7 +4,7 @@ from dataclasses import dataclass
 
 import numpy as np
 
-from modalview.drawing.axis import Axis, spread
+from modalview.drawing.axis import Axis, merged, spread
 from modalview.drawing.captions import in_two, shortened
 from modalview.drawing.labels import Board, Line, Spot
 from modalview.drawing.primitives import Anchor, Box, Circles, Drawing, Item, Lines, Role, Size, Text
@@ -27,6 +27,7 @@ _DISCS = (0.49, 0.57)
 _BOUND, _COUNT = 0.61, 0.70
 _MODE = (0.79, 0.91)
 HAIR = np.array([0.0, -1.0, 0.0, 1.0])  # what a level line takes, pixels
+MANY = 60  # discs or modes: more are drawn together
 LEAST_COLUMNS = 104.0  # pixels right of the labels; with less, the discs are folded away
 
 _RANGE_ROLE = {Verdict.IN_BAND: Role.BAD, Verdict.NOMINAL_ONLY: Role.WARN}
@@ -209,14 +210,17 @@ def _off_scale(frame: _Frame, bands: list[ScaleBand]) -> tuple[Item, ...]:
 
 def _discs(frame: _Frame, content: ScaleContent) -> tuple[Item, ...]:
     """Draw the Gershgorin bars, thin and pale, side by side."""
-    ordered = content.discs[np.argsort(content.discs[:, 1])]
     first, last = frame.x(_DISCS[0]), frame.x(_DISCS[1])
+    if len(content.discs) > MANY:  # one bar for discs that overlap: thinner ones could not be told apart
+        ends = frame.axis.ys_of(merged(content.discs[:, 0], content.discs[:, 2]))
+        across = np.full(len(ends), (first + last) / 2)
+        return (Lines(np.stack([across, ends[:, 0], across, ends[:, 1]], axis=1), Role.MUTED, 8.0, 0.4),)
+    ordered = content.discs[np.argsort(content.discs[:, 1])]
     pitch = min(8.0, (last - first) / max(len(ordered) - 1, 1))
     x = (first + last) / 2 + (np.arange(len(ordered)) - (len(ordered) - 1) / 2) * pitch
-    bottom = [frame.axis.y_of(hz) for hz in ordered[:, 0]]
-    top = [frame.axis.y_of(hz) for hz in ordered[:, 2]]
-    bars = np.stack([x, np.array(bottom), x, np.array(top)], axis=1)
-    dots = np.stack([x, np.array([frame.axis.y_of(hz) for hz in ordered[:, 1]])], axis=1)
+    bottom, middle, top = frame.axis.ys_of(ordered).T
+    bars = np.stack([x, bottom, x, top], axis=1)
+    dots = np.stack([x, middle], axis=1)
     width = min(3.0, 0.7 * pitch) if len(ordered) > 1 else 3.0
     return (
         Lines(bars, Role.MUTED, width, 0.55),
@@ -299,12 +303,16 @@ def _modes(frame: _Frame, modes: tuple[ScaleMode, ...]) -> tuple[Item, ...]:
     room = 8.0 + text_width(widest, Size.SMALL, bold=True, text_scale=frame.text_scale)
     left, right = frame.x(_MODE[0]), min(frame.x(_MODE[1]), frame.right - room)
     items: list[Item] = []
-    for mode in shown:
-        y = axis.y_of(mode.hz)
-        role = _mode_role(mode)
-        top, bottom = axis.y_of(mode.high), axis.y_of(mode.low)
-        items.append(Box(left, top, right - left, max(bottom - top, 1.0), 2.0, None, role, 0.0, 0.2))
-        items.append(Lines(np.array([[left, y, right, y]]), role, 2.4))
+    for role in dict.fromkeys(_mode_role(mode) for mode in shown):
+        alike = [mode for mode in shown if _mode_role(mode) is role]
+        ranges = np.array([(mode.low, mode.high) for mode in alike])
+        if len(shown) > MANY:  # ranges that overlap are one
+            ranges = merged(ranges[:, 0], ranges[:, 1])
+        for bottom, top in axis.ys_of(ranges).tolist():
+            items.append(Box(left, top, right - left, max(bottom - top, 1.0), 2.0, None, role, 0.0, 0.2))
+        ticks = axis.ys_of(np.array([mode.hz for mode in alike]))
+        across = np.stack([0 * ticks + left, ticks, 0 * ticks + right, ticks], axis=1)
+        items.append(Lines(across, role, 2.4 if len(shown) <= MANY else 1.0))
     return tuple(items) + _numbers(frame, shown, right + 5)
 
 

@@ -53,6 +53,7 @@ _MOUNT = np.vstack(
 _SHAFT = np.array([[0.0, -3.0, 1.0, -3.0], [0.0, 3.0, 1.0, 3.0]])
 _RIGID = np.array([[0.0, -2.5, 1.0, -2.5], [0.0, 2.5, 1.0, 2.5]])
 _LINE = np.array([[0.0, 0.0, 1.0, 0.0]])
+STRAIGHT = _LINE  # of links too many and too small for a symbol
 _NOTHING = np.zeros((0, 4))
 
 BEAM_WIDTH = 4.5  # pixels

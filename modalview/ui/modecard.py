@@ -1,14 +1,16 @@
 """How one found mode is painted in the list: frequency, small picture, energy shares."""
 
 from dataclasses import dataclass
+from functools import partial
 from typing import Any
 
-from PySide6.QtCore import QModelIndex, QObject, QPersistentModelIndex, QRectF, QSize, Qt
+from PySide6.QtCore import QModelIndex, QObject, QPersistentModelIndex, QRectF, QSize, Qt, Signal
 from PySide6.QtGui import QColor, QFont, QFontMetricsF, QPainter, QPen, QPixmap
 from PySide6.QtWidgets import QStyle, QStyledItemDelegate, QStyleOptionViewItem
 
 from modalview.model.parts import Model
 from modalview.ui.canvas import paint_drawing
+from modalview.ui.later import Later
 from modalview.ui.modelist import (
     ModeList,
     damped_facts,
@@ -25,6 +27,8 @@ _GAP = 8.0
 _RADIUS = 6.0
 _SMALL = 0.88  # of the text size
 _PALE = 0.55  # of a picture that is out of date
+# More bodies than this are laid out in a thread.
+AT_ONCE = 30
 _BARS = 3
 _LEAST_PICTURE = 24  # pixels of height
 # Least and greatest width of a card, in heights of a line.
@@ -47,9 +51,13 @@ class _Now:
 class ModeCard(QStyledItemDelegate):
     """Paints a card; the small pictures are laid out once per model and size of card."""
 
+    laid_out = Signal()  # a small picture has come out of its thread
+
     def __init__(self, swing: Swing, parent: QObject | None = None) -> None:
         super().__init__(parent)
         self._swing = swing
+        self._background = Later(self)
+        self._background.done.connect(self._on_laid_out)
         self._theme: Theme = LIGHT
         self._model: Model | None = None
         self._room, self._height = 0, 190
@@ -70,9 +78,14 @@ class ModeCard(QStyledItemDelegate):
         if drawn != self._drawn:
             self._drawn = drawn
             self._small.clear()
+            self._background.forget()
         self._model = model
         self._posed.clear()
         self._still.clear()
+
+    def close_threads(self) -> None:
+        """Wait for a layout under way."""
+        self._background.close()
 
     def set_room(self, width: int, height: int) -> None:
         """Make the cards as tall as the list; few of them share its width."""
@@ -223,8 +236,17 @@ class ModeCard(QStyledItemDelegate):
         from modalview.drawing import modepicture  # noqa: PLC0415  (numpy comes after the first paint)
 
         if size not in self._small:
-            self._small[size] = modepicture.mode_geometry(self._model, *size)
-        return size, self._small[size]
+            lay_out = partial(modepicture.mode_geometry, self._model, *size)
+            if len(self._model.bodies) <= AT_ONCE:
+                self._small[size] = lay_out()
+            elif not self._background.waits_for(size):
+                self._background.ask(size, lay_out)
+        return size, self._small.get(size)
+
+    def _on_laid_out(self, size: tuple[int, int], geometry: Any) -> None:
+        self._small[size] = geometry
+        self._still.clear()
+        self.laid_out.emit()
 
     def _paint_under(self, painter: QPainter, place: QRectF, now: "_Now") -> None:
         """Paint what lies under every frame of a small picture."""

@@ -30,6 +30,7 @@ class ModeRow(QListView):
         self._swing = swing
         self.modes = ModeList(self)
         self.card = ModeCard(swing, self)
+        self.card.laid_out.connect(self.viewport().update)
         self.setModel(self.modes)
         self.setItemDelegate(self.card)
         self.setObjectName("modeRow")

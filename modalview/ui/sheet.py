@@ -1,6 +1,7 @@
 """The sheet: the model as an engineering drawing, on which the chosen mode moves."""
 
 from dataclasses import replace
+from functools import partial
 from time import perf_counter
 from typing import Any
 
@@ -10,10 +11,13 @@ from PySide6.QtWidgets import QSizePolicy, QWidget
 
 from modalview.model.parts import Model
 from modalview.ui.canvas import paint_drawing, painted
+from modalview.ui.later import Later
 from modalview.ui.swing import Swing
 from modalview.ui.theme import LIGHT, Theme
 
 FRAME_MS = 16
+# More bodies than this are laid out in a thread.
+AT_ONCE = 30
 # An edited model is laid out anew when its verdict is shown, or after the longer time.
 SOON_MS, LATER_MS = 15, 250
 # Painting a frame takes at most this share of the time.
@@ -49,6 +53,8 @@ class Sheet(QWidget):
         # The verdict of an edit comes first: laying out a large sheet takes longer than counting.
         self._later = QTimer(self, singleShot=True)
         self._later.timeout.connect(self._rebuild)
+        self._background = Later(self)
+        self._background.done.connect(self._show_geometry)
         self._drag: QPoint | None = None
         self._space = False
         self.setMinimumSize(320, 200)
@@ -133,19 +139,38 @@ class Sheet(QWidget):
     # Building
 
     def _rebuild(self) -> None:
+        """Lay the sheet out: at once where that is quick, else in a thread, with the old sheet in sight."""
         self._later.stop()
         if self._model is None:
             return
         from modalview.drawing import sheet  # noqa: PLC0415  (numpy comes after the first paint)
 
-        self._geometry = sheet.sheet_geometry(
-            self._model, self.width(), self.height(), text_scale=self._text_scale, view=self._view
+        lay_out = partial(
+            sheet.sheet_geometry,
+            self._model,
+            self.width(),
+            self.height(),
+            text_scale=self._text_scale,
+            view=self._view,
         )
+        if len(self._model.bodies) <= AT_ONCE:
+            self._background.forget()
+            self._show_geometry("sheet", lay_out())
+        else:
+            self._background.ask("sheet", lay_out)
+
+    def _show_geometry(self, _key: str, geometry: Any) -> None:
+        self._geometry = geometry
         self._pose()
+
+    def close_threads(self) -> None:
+        """Wait for a layout under way."""
+        self._background.close()
 
     def _pose(self) -> None:
         self._rest = self._posed = None
-        if self._mode is not None and self._geometry is not None:
+        fits = self._geometry is not None and self._mode is not None
+        if fits and len(self._mode.motion) == len(self._geometry.model.bodies):
             from modalview.drawing import motion  # noqa: PLC0415  (see above)
 
             self._posed = motion.pose(self._geometry, self._mode.motion)

@@ -312,6 +312,8 @@ class Window(Frame):
             return
         self._settings.set(names.GEOMETRY, self.saveGeometry())
         self._worker.close()
+        for place in (self.sheet, self.modes.row.card, self.damped.row.card):
+            place.close_threads()
         self.closed.emit()
         super().closeEvent(event)
 

@@ -1,0 +1,49 @@
+"""Work that would hold the window up, done in a thread of its own: layouts of large drawings and tables."""
+
+from collections.abc import Callable, Hashable
+from typing import Any
+
+from PySide6.QtCore import QObject, QThreadPool, Signal, Slot
+
+
+class Later(QObject):
+    """Runs pure functions one by one; of several asked for under one key only the last is answered."""
+
+    done = Signal(object, object)  # key, result
+    _finished = Signal(object, object, object)
+
+    def __init__(self, parent: QObject | None = None) -> None:
+        super().__init__(parent)
+        self._pool = QThreadPool(self)  # waits for its thread when it goes
+        self._pool.setMaxThreadCount(1)
+        self._wanted: dict[Hashable, object] = {}
+        self._finished.connect(self._on_finished)
+
+    def ask(self, key: Hashable, work: Callable[[], Any]) -> None:
+        """Do a piece of work; an older one under the same key is dropped."""
+        ticket = self._wanted[key] = object()
+
+        def run() -> None:
+            if self._wanted.get(key) is ticket:
+                self._finished.emit(key, ticket, work())
+
+        self._pool.start(run)
+
+    def waits_for(self, key: Hashable) -> bool:
+        """Return whether a piece of work is under way."""
+        return key in self._wanted
+
+    def forget(self) -> None:
+        """Drop everything that was asked for."""
+        self._wanted.clear()
+
+    def close(self) -> None:
+        """Drop everything and wait for the thread."""
+        self.forget()
+        self._pool.waitForDone()
+
+    @Slot(object, object, object)
+    def _on_finished(self, key: Hashable, ticket: object, result: Any) -> None:
+        if self._wanted.get(key) is ticket:
+            del self._wanted[key]
+            self.done.emit(key, result)
