@@ -76,7 +76,7 @@ def add_words(parser: argparse.ArgumentParser) -> None:
     for word in (STIFFNESS, *WORDS):
         kind = Path if word.name in FILES else str
         about = word.about.replace("%", "%%")
-        group.add_argument(f"--{word.name}", type=kind, metavar=word.example.replace("%", "%%"), help=about)
+        group.add_argument(f"--{word.name}", type=kind, metavar=word.example, help=about)
 
 
 def either(of_file: Run, of_matrices: Run) -> Run:
