@@ -24,6 +24,14 @@ These commands work without one:
 def main(arguments: Sequence[str] | None = None) -> int:
     """Run what the words ask for and return the exit status."""
     words = list(sys.argv[1:] if arguments is None else arguments)
+    try:
+        return _run(words)
+    except KeyboardInterrupt:  # while the libraries are loaded; a command tells it by itself
+        sys.stderr.write("keepclear: stopped\n")
+        return 2
+
+
+def _run(words: list[str]) -> int:
     if words and (words[0] in (*COMMANDS, *HELP) or words[0].startswith("-") or len(words) > 1):
         from modalview.cli import main as command_line  # noqa: PLC0415  (only what is asked for is loaded)
 

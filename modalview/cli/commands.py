@@ -7,7 +7,7 @@ from pathlib import Path
 
 from modalview.cli import documents, imports, matrices, near, texts
 from modalview.cli.damped import damped_document, damped_text
-from modalview.cli.printing import OK, UNUSABLE, progress, say, say_json, verdict_code
+from modalview.cli.printing import OK, UNUSABLE, failure_text, progress, say, say_json, shown, verdict_code
 from modalview.errors import KeepclearError, UsageError
 from modalview.model.parts import Model
 from modalview.store import read_model
@@ -98,7 +98,7 @@ def run_check(words: argparse.Namespace) -> int:
                 raise
             found.append({"file": str(path), "error": str(error)})
             codes.append(UNUSABLE)
-            sys.stderr.write(f"keepclear: {path}: {error}\n")
+            sys.stderr.write(f"keepclear: {shown(failure_text(error, path))}\n")
         if not words.json and path is not words.files[-1]:
             say("")
     if words.json:

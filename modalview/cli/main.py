@@ -1,15 +1,19 @@
 """Reads the words of the command line, runs the command, turns every failure into a message."""
 
 import argparse
+import io
 import logging
+import os
 import sys
 from collections.abc import Sequence
-from typing import NoReturn
+from contextlib import suppress
+from pathlib import Path
+from typing import NoReturn, TextIO
 
 from modalview import __version__
 from modalview.cli.cautions import CAUTION
 from modalview.cli.commands import COMMANDS
-from modalview.cli.printing import UNUSABLE
+from modalview.cli.printing import UNUSABLE, failure_text, shown
 from modalview.errors import FaultsError, KeepclearError
 
 _DESCRIPTION = (
@@ -27,22 +31,23 @@ def main(arguments: Sequence[str] | None = None) -> int:
         0 done (``check``: all clear), 1 ``check`` found something not clear, 2 unusable input or nothing
         to check.
     """
+    _replace_closed_streams()
     for stream in (sys.stdout, sys.stderr):
         if hasattr(stream, "reconfigure"):
             stream.reconfigure(encoding="utf-8", errors="replace")
     words = _parser().parse_args(arguments)
     try:
-        return int(words.run(words))
+        return _flushed(int(words.run(words)))
     except FaultsError as error:
-        noun = "fault" if len(error.faults) == 1 else "faults"
-        _complain(f"{len(error.faults)} {noun}:\n" + "\n".join(f"  {fault}" for fault in error.faults))
+        _complain(failure_text(error, _file(words)))
     except KeepclearError as error:
         _complain(str(error))
     except KeyboardInterrupt:
         _complain("stopped")
     except BrokenPipeError:
-        sys.stderr.close()  # whoever read the output has gone; nothing is left to be said
+        _forget(sys.stdout)  # whoever read the output has gone; nothing is left to be said
     except OSError as error:  # files of the user are guarded where they are read and written
+        _forget(sys.stdout)
         _complain(f"the output cannot be written: {error.strerror or error}")
     except Exception as error:  # the last resort of the command line: a message, never a traceback
         logging.getLogger(__name__).debug("unexpected failure", exc_info=True)
@@ -50,8 +55,41 @@ def main(arguments: Sequence[str] | None = None) -> int:
     return UNUSABLE
 
 
+def _flushed(code: int) -> int:
+    """Write what is still held, so that a full disk is told here and not by the interpreter at its end."""
+    sys.stdout.flush()
+    return code
+
+
 def _complain(message: str) -> None:
-    sys.stderr.write(f"keepclear: {message}\n")
+    try:
+        sys.stderr.write(f"keepclear: {shown(message)}\n")
+        sys.stderr.flush()
+    except OSError:  # nobody can be told; the exit code still is
+        _forget(sys.stderr)
+
+
+def _file(words: argparse.Namespace) -> Path | None:
+    """Return the one file that the words name, if there is one."""
+    files = getattr(words, "files", None) or [getattr(words, "file", None)]
+    return files[0] if len(files) == 1 else None
+
+
+def _replace_closed_streams() -> None:
+    """Give a program whose streams are closed (``>&-``) some that lead nowhere; the exit code still tells."""
+    for name in ("stdout", "stderr"):
+        if getattr(sys, name) is None:
+            setattr(sys, name, io.StringIO())
+
+
+def _forget(stream: TextIO) -> None:
+    """Send what a stream still holds nowhere; written at the end, it would fail again and change the code."""
+    with suppress(OSError, AttributeError):  # a stream without a file holds nothing for the end
+        nowhere = os.open(os.devnull, os.O_WRONLY)
+        try:
+            os.dup2(nowhere, stream.fileno())
+        finally:
+            os.close(nowhere)
 
 
 class _Parser(argparse.ArgumentParser):

@@ -1,12 +1,17 @@
 """What the commands print with, and the codes they end with."""
 
 import json
+import re
 import sys
+from pathlib import Path
 from typing import Any
 
+from modalview.errors import FaultsError, FileAccessError, KeepclearError
 from modalview.resonance.results import Verdict
 
 OK, NOT_CLEAR, UNUSABLE = 0, 1, 2
+# What a terminal obeys instead of showing it: control characters, and marks that turn the reading direction.
+_OBEYED = re.compile("[\x00-\x08\x0b-\x1f\x7f-\x9f\u200e\u200f\u202a-\u202e\u2066-\u2069]")
 
 
 def verdict_code(verdict: Verdict | None) -> int:
@@ -16,9 +21,24 @@ def verdict_code(verdict: Verdict | None) -> int:
     return OK if verdict is Verdict.CLEAR else NOT_CLEAR
 
 
+def shown(text: str) -> str:
+    r"""Return text with what a terminal would obey written out, such as ``\u001b``; also valid in JSON."""
+    return _OBEYED.sub(lambda found: f"\\u{ord(found[0]):04x}", text)
+
+
+def failure_text(error: KeepclearError, path: Path | None) -> str:
+    """Return a failure with the file it belongs to, each fault on a line of its own."""
+    if isinstance(error, FaultsError):
+        noun = "fault" if len(error.faults) == 1 else "faults"
+        told = f"{len(error.faults)} {noun}:\n" + "\n".join(f"  {fault}" for fault in error.faults)
+    else:
+        told = str(error)
+    return told if path is None or isinstance(error, FileAccessError) else f"{path}: {told}"
+
+
 def say(text: str) -> None:
     """Print text and one newline."""
-    sys.stdout.write(text.rstrip("\n") + "\n")
+    sys.stdout.write(shown(text.rstrip("\n")) + "\n")
 
 
 def say_json(document: Any) -> None:

@@ -1,11 +1,15 @@
 """The command line as a person or a script meets it: words, exit codes, messages, keys."""
 
 import json
+import os
 import re
+import subprocess
+import sys
 from pathlib import Path
 
 import pytest
 
+from modalview.__main__ import main as start
 from modalview.cli import main
 from modalview.places import demo_models
 
@@ -112,6 +116,7 @@ class TestWords:
     @pytest.mark.parametrize("words", [[], ["bounds"], ["modes"], ["check"], ["picture"]])
     def test_help_names_every_option_and_the_caution(self, capsys, words):
         code, out, _ = run(capsys, *words, "--help")
+        assert "%%" not in out
         assert code == 0
         assert "screening aid" in out
         assert ("FILE" if words else "COMMAND") in out
@@ -172,9 +177,10 @@ class TestUnusableInput:
                 "stiffness": "-1 N/m",
             }
         ]
-        code, _, err = run(capsys, "check", file(links=links))
+        path = file(links=links)
+        code, _, err = run(capsys, "check", path)
         assert code == 2
-        assert err.startswith("keepclear: 2 faults:\n")
+        assert err.startswith(f"keepclear: {path}: 2 faults:\n")
         assert 'links[0] "k" . to . support: there is no support "gone"' in err
         assert 'links[0] "k" . stiffness: must be above zero; found "-1 N/m"' in err
 
@@ -203,7 +209,7 @@ class TestUnusableInput:
         )
         code, _, err = run(capsys, "check", path)
         assert code == 2
-        assert "keepclear: 1 fault:\n  gear low, high: the gear loop through b cannot turn" in err
+        assert f"keepclear: {path}: 1 fault:\n  gear low, high: the gear loop through b cannot turn" in err
 
     def test_a_file_with_nothing_that_can_move(self, capsys, file):
         code, _, err = run(capsys, "modes", file(bodies=[{"id": "a", "mass": "10 kg", "dof": []}]))
@@ -218,6 +224,35 @@ class TestUnusableInput:
         assert good["verdict"] == "clear"
         assert set(spoiled) == {"file", "error"}
 
+    def test_each_file_of_several_is_named_once(self, capsys, tmp_path, file):
+        gone, bad = tmp_path / "gone.keepclear", file("[]", name="bad.keepclear")
+        _, _, err = run(capsys, "check", gone, bad)
+        assert err.splitlines()[:2] == [
+            f"keepclear: {gone}: there is no such file",
+            f"keepclear: {bad}: 1 fault:",
+        ]
+
+    def test_names_cannot_steer_the_terminal(self, capsys, file):
+        bodies = [{"id": "a", "name": "motor\x1b[2J\nCLEAR\u202e", "mass": "10 kg"}]
+        code, out, _ = run(capsys, "modes", file(bodies=bodies))
+        assert code == 0
+        assert "motor\\u001b[2J CLEAR\\u202e" in out
+        assert not {"\x1b", "\u202e"} & set(out)
+        assert "\nCLEAR" not in out
+        _, _, err = run(capsys, "modes", file(bodies=[{"id": "a\x1b[2J", "mass": "10 kg"}]))
+        assert "\x1b" not in err
+
+    def test_names_in_json_are_what_the_file_says(self, capsys, file):
+        bodies = [{"id": "a", "name": "motor\x9b\u202e", "mass": "10 kg"}]
+        _, out, _ = run(capsys, "modes", file(bodies=bodies), "--json")
+        assert json.loads(out)["modes"][0]["kinetic_energy"][0]["name"] == "motor\x9b\u202e"
+
+    @pytest.mark.parametrize("name", ["stdout", "stderr"])
+    def test_a_closed_stream_leaves_the_exit_code(self, capsys, monkeypatch, file, name):
+        monkeypatch.setattr(f"sys.{name}", None)
+        assert run(capsys, "check", demo(IN_BAND))[0] == 1
+        assert run(capsys, "check", file("{"))[0] == 2
+
     def test_output_that_cannot_be_written_is_told(self, capsys, monkeypatch):
         class Full:
             def write(self, _text):
@@ -226,6 +261,26 @@ class TestUnusableInput:
         monkeypatch.setattr("sys.stdout", Full())
         code, _, err = run(capsys, "modes", demo(ALL_CLEAR))
         assert (code, err) == (2, "keepclear: the output cannot be written: No space left on device\n")
+
+    @pytest.mark.slow
+    @pytest.mark.skipif(not Path("/dev/full").exists(), reason="a disk that is always full is needed")
+    def test_a_full_disk_is_told_where_the_output_waits_for_the_end(self):
+        environment = {k: v for k, v in os.environ.items() if k != "PYTHONUNBUFFERED"}
+        words = [sys.executable, "-m", "modalview", "bounds", demo(ALL_CLEAR)]
+        with Path("/dev/full").open("w", encoding="utf-8") as full:
+            found = subprocess.run(  # noqa: S603
+                words, stdout=full, stderr=-1, text=True, env=environment, check=False
+            )
+        told = "keepclear: the output cannot be written: No space left on device\n"
+        assert (found.returncode, found.stderr) == (2, told)
+
+    def test_stopped_while_the_libraries_are_loaded(self, capsys, monkeypatch):
+        def stop(_path):
+            raise KeyboardInterrupt
+
+        monkeypatch.setattr("modalview.__main__._window", stop)
+        assert start([]) == 2
+        assert capsys.readouterr().err == "keepclear: stopped\n"
 
     def test_an_unexpected_failure_is_a_message(self, capsys, monkeypatch):
         def fail(*_):
