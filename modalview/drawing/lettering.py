@@ -138,6 +138,8 @@ def _name_bodies(geometry: SheetGeometry, board: Board, inner: Board, letters: _
         if not placed and not many and len(geometry.model.bodies) <= CROWD:
             middle = geometry.boxes[number].reshape(2, 2).mean(axis=0)
             placed = board.place(title, ring_about(*middle.tolist()), sway=_sway(geometry))
+            near = round_about(_rectangle(geometry.boxes[number]), 6.0)
+            placed = placed or board.place((replace(title[0], size=Size.SMALL),), near)
         letters.body_labels += [(number, text) for text in placed]
         if not placed:
             letters.unlabelled.append(body.id)
@@ -210,11 +212,26 @@ def _name_pushes(
         heads = (Line(", ".join(text.partition(",")[0] for text in push.texts), Role.WARN, Size.SMALL),)
         placed: list[Text] = []
         still, sway = (0.0, 0.0), _sway(geometry)
-        for some, room in ((lines, sway), (small, sway), (lines, still), (small, still), (heads, still)):
-            placed = placed or _by_push(geometry, push, boards, some, room)
+        for some, room, far in (
+            (lines, sway, False),
+            (small, sway, False),
+            (lines, still, False),
+            (small, sway, True),
+            (small, still, True),
+            (heads, still, True),
+        ):
+            placed = placed or _by_push(geometry, push, boards, some, _Room(room, far))
         letters.body_labels += [(push.body, text) for text in placed]
         if not placed:
             letters.unlabelled.append(push.texts[0])
+
+
+@dataclass(frozen=True, slots=True)
+class _Room:
+    """How much a text keeps for its motion, and whether it may stand far from its arrow."""
+
+    sway: tuple[float, float]
+    far: bool
 
 
 def _by_push(
@@ -222,7 +239,7 @@ def _by_push(
     push: Push,
     boards: tuple[Board, Board],
     lines: tuple[Line, ...],
-    sway: tuple[float, float],
+    room: "_Room",
 ) -> list[Text]:
     """Write lines by an arrow: on its body where it acts there, else by it, about it, on the body."""
     board, inner = boards
@@ -231,9 +248,11 @@ def _by_push(
     placed: list[Text] = []
     if push.on_body:
         placed = inner.place(lines, round_about((x1, y1, x2 - x1, y2 - y1), 4.0), within=within)
-    spots = [*push.spots, *ring_about(x1, y1)]
-    placed = placed or board.place(lines, spots, sway=sway)
-    return placed or inner.place(lines, _inside(within, board.size(lines)), within=within)
+    spots = [*push.spots, *ring_about(x1, y1)] if room.far else list(push.spots)
+    placed = placed or board.place(lines, spots, sway=room.sway)
+    if placed or not room.far:
+        return placed
+    return inner.place(lines, _inside(within, board.size(lines)), within=within)
 
 
 def _name_links(geometry: SheetGeometry, board: Board, letters: _Letters) -> None:

@@ -90,7 +90,9 @@ class ScaleContent:
 
 def scale_content(outlook: Outlook, solution: Solution | None = None) -> ScaleContent:
     """Take from an outlook, and the solution of the same model if there is one, what the scale shows."""
-    bands = tuple(_band(check) for check in outlook.checks)
+    machines = outlook.request.model.machines
+    names = {one.id: one.name or one.id for one in machines} if len(machines) > 1 else {}
+    bands = tuple(_band(check, names.get(check.band.machine, "")) for check in outlook.checks)
     counts = tuple(
         ScaleCount(interval.low_hz, interval.high_hz, interval.number, interval.check is not None)
         for interval in outlook.intervals
@@ -107,10 +109,11 @@ def scale_content(outlook: Outlook, solution: Solution | None = None) -> ScaleCo
     )
 
 
-def _band(check: Check) -> ScaleBand:
+def _band(check: Check, machine: str) -> ScaleBand:
+    """Return a check's band; of several machines each is named."""
     low, high = (omega / RAD_PER_HZ for omega in check.band.nominal)
     from_, to = (omega / RAD_PER_HZ for omega in check.band.excitation)
-    return ScaleBand(check.band.label, low, high, from_, to, check.verdict)
+    return ScaleBand(f"{check.band.label} {machine}".strip(), low, high, from_, to, check.verdict)
 
 
 def _discs_hz(discs: Discs | None) -> Floats:

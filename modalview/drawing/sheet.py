@@ -44,7 +44,7 @@ def sheet_geometry(
     """
     side = min(SIDE * text_scale, (1 - LEAST_WIDE) / 2 * width)
     block = MARGIN + title_size(model.title, width, text_scale)[1]
-    arrows = (56.0 if lines_above(model) else 8.0) + 17.0 * lines_above(model) * text_scale
+    arrows = (74.0 if lines_above(model) else 8.0) + 17.0 * lines_above(model) * text_scale
     top = min(block + arrows, max((1 - LEAST_HIGH) * height - BOTTOM, block + 4.0))
     area = (side, top, max(width - 2 * side, 40.0), max(height - top - BOTTOM, 40.0))
     return lettered(bare_geometry(model, (width, height), area, view, 1.0, text_scale))

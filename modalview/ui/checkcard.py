@@ -90,11 +90,15 @@ class CheckCard(QFrame):
         for row, text in enumerate((self.verdict, self.nearest, self.reason), start=1):
             layout.addWidget(text, row, 1, 1, 2)
 
-    def show_check(self, check: Any, theme: Theme, *, current: bool) -> None:
-        """Show a resonance.Check; ``current`` tells whether the nearest mode is of this model."""
+    def show_check(self, check: Any, theme: Theme, *, current: bool, machine: str = "") -> None:
+        """Show a resonance.Check; ``current`` tells whether the nearest mode is of this model.
+
+        ``machine`` names the machine where there are several.
+        """
         verdict = str(check.verdict)
         self.sign.show_verdict(verdict, theme)
-        self.label.setText(check.band.label)
+        label = f"{machine}: {check.band.label}" if machine else check.band.label
+        self.label.setText(label)
         self.frequency.setText(excitation_text(check.band))
         self.verdict.setText(check.wording)
         self.verdict.setProperty("verdict", verdict)
@@ -105,7 +109,7 @@ class CheckCard(QFrame):
         self.reason.setText(_kept_together(check.reason))
         self.reason.setVisible(not nearest or verdict != "clear")
         self.setToolTip(f"{check.band.check}: {check.reason}\n{_margin_text(check.band)}")
-        self.setAccessibleName(f"{check.band.label}, {self.frequency.text()}: {check.wording}")
+        self.setAccessibleName(f"{label}, {self.frequency.text()}: {check.wording}")
         self.setAccessibleDescription(f"{nearest}. {check.reason}".removeprefix(". "))
 
 

@@ -9,7 +9,7 @@ from modalview.ui.canvas import painted
 from modalview.ui.theme import LIGHT, Theme
 
 # In heights of a line: with less, the picture scrolls rather than crowds.
-_LEAST_LINES = (34.0, 17.0)
+_LEAST_LINES = (34.0, 27.0)
 
 
 class PlaneCanvas(QWidget):

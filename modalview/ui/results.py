@@ -136,8 +136,11 @@ class Results(QScrollArea):
             card = CheckCard(self._inside)
             self._cards.append(card)
             self._checks.addWidget(card)
+        machines = self._document.model.machines if self._document.model is not None else ()
+        names = {one.id: one.name or one.id for one in machines} if len(machines) > 1 else {}
         for card, check in zip(self._cards, checks, strict=False):
-            card.show_check(check, self._theme, current=current)
+            machine = names.get(check.band.machine, "")
+            card.show_check(check, self._theme, current=current, machine=machine)
         for number, card in enumerate(self._cards):
             card.setVisible(number < len(checks))
         outlook = self._analysis.outlook

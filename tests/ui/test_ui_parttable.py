@@ -1,6 +1,7 @@
 import pytest
 from conftest import settle
-from PySide6.QtCore import Qt
+from PySide6.QtCore import QItemSelection, QItemSelectionModel, Qt
+from PySide6.QtGui import QGuiApplication
 from PySide6.QtWidgets import QLineEdit
 
 from modalview.ui.parttable import CONVERTED, PART, TOLERANCE, TYPED, WHAT
@@ -88,4 +89,77 @@ def test_typing_in_the_table_by_keyboard(pump, qtbot):
     qtbot.keyClicks(editor, "650 kg")
     qtbot.keyClick(editor, Qt.Key.Key_Return)
     qtbot.waitUntil(lambda: pump.document.model.bodies[0].mass.text == "650 kg")
+    settle(qtbot, pump)
+
+
+def mark(window, first, last):
+    """Mark a block of cells, as a pointer would."""
+    window.parts.setCurrentIndex(first)
+    window.parts.selectionModel().select(
+        QItemSelection(first, last), QItemSelectionModel.SelectionFlag.ClearAndSelect
+    )
+
+
+def paste(window, qtbot, text):
+    QGuiApplication.clipboard().setText(text)
+    qtbot.keyClick(window.parts, Qt.Key.Key_V, Qt.KeyboardModifier.ControlModifier)
+
+
+def test_a_block_is_copied_with_tabs_and_lines(pump, qtbot):
+    pump.on_go_to_values()
+    mark(
+        pump,
+        index_of(pump, "base support", "stiffness", PART),
+        index_of(pump, "base support", "stiffness", TOLERANCE),
+    )
+    qtbot.keyClick(pump.parts, Qt.Key.Key_C, Qt.KeyboardModifier.ControlModifier)
+    assert QGuiApplication.clipboard().text() == "base support\tstiffness\t175 kN/mm\t1.75e8 N/m\t25 %\n"
+
+
+def test_a_pasted_block_is_one_edit_with_decimal_commas(pump, qtbot):
+    before = pump.document.model
+    first = index_of(pump, "base support", "stiffness", PART)
+    pump.parts.setCurrentIndex(first)
+    paste(pump, qtbot, "base support\tstiffness\t1,5e9 N/m\t\t10 %\n")
+    stiffness = pump.document.model.links[2].stiffness
+    assert stiffness.si == pytest.approx(1.5e9)
+    assert stiffness.tolerance.limits(1.0) == pytest.approx((0.9, 1.1))
+    assert pump.document.stack.count() == 1
+    pump.document.stack.undo()
+    assert pump.document.model == before
+    settle(qtbot, pump)
+
+
+def test_pasted_cells_that_cannot_be_read_stay_with_their_reasons_and_the_others_are_taken(pump, qtbot):
+    index = index_of(pump, "motor", "mass", TYPED)
+    pump.parts.setCurrentIndex(index)
+    told = []
+    pump.parts.told.connect(told.append)
+    paste(pump, qtbot, "heavy\t\t4 %")
+    assert index.data() == "heavy"
+    assert index.data(Qt.ItemDataRole.ToolTipRole)
+    mass = pump.document.model.bodies[0].mass
+    assert mass.text == "620 kg"
+    assert mass.tolerance.both.text == "4 %"
+    assert told == ["1 value pasted; 1 cannot be read and stand in red with the reason"]
+    settle(qtbot, pump)
+
+
+def test_one_text_fills_every_marked_cell(pump, qtbot):
+    first = index_of(pump, "motor", "mass", TOLERANCE)
+    mark(pump, first, first)
+    paste(pump, qtbot, "7 %")
+    mark(pump, index_of(pump, "motor", "name", TYPED), index_of(pump, "motor", "mass", TYPED))
+    paste(pump, qtbot, "650 kg")
+    assert pump.document.model.bodies[0].mass.text == "650 kg"
+    assert pump.document.model.bodies[0].name == "650 kg"  # a name may be anything
+    settle(qtbot, pump)
+
+
+def test_what_lies_beyond_the_table_is_told(pump, qtbot):
+    told = []
+    pump.parts.told.connect(told.append)
+    pump.parts.setCurrentIndex(pump.parts.lines.index(pump.parts.lines.rowCount() - 1, TYPED))
+    paste(pump, qtbot, "3 %\n4 %\n5 %\n")
+    assert told == ["1 value pasted; 2 lie beyond the table"]
     settle(qtbot, pump)

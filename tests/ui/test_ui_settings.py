@@ -1,8 +1,9 @@
 import pytest
-from PySide6.QtCore import QSettings
+from PySide6.QtCore import QSettings, Qt
 
 from modalview.ui import settings as names
-from modalview.ui.settings import ALL, Settings
+from modalview.ui.settings import ALL, ASKED, Settings, settings_text
+from modalview.ui.settingsdialog import SettingsDialog
 
 
 @pytest.fixture
@@ -43,3 +44,52 @@ def test_a_kept_value_that_no_longer_fits_counts_as_the_default(store):
 def test_a_value_that_is_not_allowed_is_refused(store):
     with pytest.raises(ValueError, match="purple"):
         Settings(store).set(names.THEME, "purple")
+
+
+@pytest.mark.parametrize("setting", ALL, ids=lambda one: one.name)
+def test_every_default_is_allowed_and_explained(setting):
+    assert setting.allows(setting.default)
+    assert setting.text.endswith(".")
+
+
+def test_numbers_beyond_their_ends_count_as_the_default(store):
+    store.setValue("amplitude_percent", 400)
+    assert Settings(store).get(names.AMPLITUDE) == 60
+    with pytest.raises(ValueError, match="amplitude_percent"):
+        Settings(store).set(names.AMPLITUDE, 101)
+
+
+def test_dialog_and_help_are_made_from_the_table(qtbot, store):
+    chosen = []
+    dialog = SettingsDialog(Settings(store), lambda setting, value: chosen.append((setting.name, value)))
+    qtbot.addWidget(dialog)
+    assert list(dialog.fields) == [setting.name for setting in ASKED]
+    dialog.fields["theme"].setCurrentIndex(2)
+    dialog.fields["show_discs"].setChecked(False)
+    assert chosen == [("theme", "dark"), ("show_discs", False)]
+    dialog._go_back()
+    assert chosen[2:] == [("theme", "system"), ("show_discs", True)]
+    assert all(setting.text in settings_text() for setting in ASKED)
+    dialog.close()
+
+
+def test_units_are_shown_as_chosen_and_what_was_typed_stays(pump):
+    pump.on_setting(names.UNITS, "inch-pound")
+    lines = pump.parts.lines
+    row = next(n for n, one in enumerate(lines.rows) if (one.part, one.what) == ("motor", "mass"))
+    assert (lines.rows[row].text, lines.rows[row].converted) == ("620 kg", "1366.9 lb")
+    pump.on_setting(names.UNITS, "mm-t")
+    assert lines.rows[row].converted == "0.62 t"
+    assert lines.headerData(3, Qt.Orientation.Horizontal) == "In mm and t"
+
+
+def test_reduced_motion_keeps_modes_still_until_play_is_pressed(pump):
+    pump.on_setting(names.MOVE, True)
+    pump.on_setting(names.MOTION, "on")
+    assert not pump.swing.running
+    pump.on_setting(names.MOTION, "off")
+    assert pump.swing.running
+    pump.on_setting(names.MOTION, "on")
+    pump.play_bar.pause.setChecked(False)
+    assert pump.swing.running
+    pump.on_move(False)
