@@ -36,11 +36,17 @@ def positive_value(key: str, value: Value | None, why: str = "") -> Findings:
 def share(key: str, entry: Entry | None) -> Findings:
     """Yield a fault when a margin or ratio is not from 0 to below 100 %."""
     if entry is not None and not _is_share(entry):
-        yield key, f'must be from 0 % to below 100 %; found "{entry.text}"'
+        yield key, f'must be from 0 % to below 100 %; found "{entry.text}"{_percent_meant(entry)}'
 
 
 def _is_share(entry: Entry) -> bool:
     return math.isnan(entry.si) or 0 <= entry.si < 1
+
+
+def _percent_meant(entry: Entry) -> str:
+    """Say that a bare number is a share of one, where it was hardly meant so."""
+    bare = not entry.text.rstrip().endswith("%")
+    return f', which is {100 * entry.si:g} %; write "{entry.text} %"' if bare and 1 < entry.si < 100 else ""
 
 
 def tolerance(key: str, given: Tolerance | None, nominal: Entry | None) -> Findings:
@@ -49,7 +55,8 @@ def tolerance(key: str, given: Tolerance | None, nominal: Entry | None) -> Findi
         return
     lower = given.minus or given.both
     if lower is not None and not _is_share(lower):
-        yield key, f'must be from 0 % to below 100 % downwards; found "{lower.text}"'
+        told = f'must be from 0 % to below 100 % downwards; found "{lower.text}"'
+        yield key, told + _percent_meant(lower)
     if given.plus is not None and not (math.isnan(given.plus.si) or 0 <= given.plus.si < math.inf):
         yield key, f'must not be negative upwards; found "{given.plus.text}"'
     if given.low is not None and given.high is not None:
@@ -176,7 +183,10 @@ def _ways(context: Context, found: str, *, rotating: bool, turning: bool) -> str
     if not context.drawn_only:
         ways.append(f"a list of {context.dimensions} numbers")
         ways += ['"rotating"'] if rotating else []
-    return f"in {context.motion.value} is {', '.join(ways[:-1])} or {ways[-1]}; found {found}"
+    told = f"in {context.motion.value} is {', '.join(ways[:-1])} or {ways[-1]}; found {found}"
+    if rotating and not turning and found.strip('"-') in context.freedoms:
+        told += ', which needs a torque as magnitude, such as {"torque": "300 N m"}'
+    return told
 
 
 def listed(key: str, given: Sequence[str] | None, known: Sequence[str], where: str) -> Findings:

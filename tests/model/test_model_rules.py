@@ -12,10 +12,13 @@ from modalview.model.parts import (
     Beam,
     Body,
     End,
+    Excitation,
     Gear,
     InertiaTensor,
     LoadCase,
     LoadChange,
+    Machine,
+    Magnitude,
     Model,
     Motion,
     Mount,
@@ -29,6 +32,7 @@ from modalview.model.rules_links import link, varied_quantity
 from modalview.model.rules_records import changed_address
 from modalview.model.values import Entry, Tolerance, Value
 from modalview.units import quantities as q
+from modalview.units.parse import read
 
 
 def length(metres):
@@ -120,6 +124,39 @@ def test_a_vector_typed_in_the_window_must_be_finite():
         ),
     )
     assert "finite" in faults(model)[0].reason
+
+
+def driven(margin="10 %", **excitation):
+    """Return the faults of a mass in space that one excitation drives."""
+    model = space(tensor(2, 2, 2))
+    order = Excitation(id="1x", order=1.0, at=End(body="a"), **excitation)
+    machine = Machine(
+        id="fan",
+        speed=Entry("600 rpm", 62.83),
+        margin=Entry(margin, read(margin, q.RATIO)),
+        excitations=(order,),
+    )
+    return faults(replace(model, machines=(machine,)))
+
+
+def test_a_direction_that_turns_asks_for_a_torque():
+    (fault,) = driven(direction="rx")
+    assert 'found "rx", which needs a torque as magnitude, such as {"torque": "300 N m"}' in fault.reason
+    assert driven(direction="rx", magnitude=Magnitude(torque=Entry("300 N m", 300.0))) == ()
+    assert "torque" not in driven(direction="sideways")[0].reason
+
+
+@pytest.mark.parametrize(
+    ("margin", "hint"),
+    [
+        ("15", 'found "15", which is 1500 %; write "15 %"'),
+        ("150 %", 'found "150 %"'),
+        ("1", 'found "1"'),
+    ],
+)
+def test_a_percent_sign_left_out_is_told(margin, hint):
+    (fault,) = driven(margin=margin)
+    assert fault.reason.endswith(hint)
 
 
 def test_tiny_axes_are_compared_without_dividing_by_zero():
