@@ -23,6 +23,7 @@ from modalview.model.parts import Model
 __all__ = ["SheetGeometry", "TitleLines", "part_at", "sheet_drawing", "sheet_geometry", "title_lines"]
 
 SIDE, BOTTOM = 110.0, 46.0  # pixels kept free for labels, and for ground
+ARROWS = 62.0  # pixels that excitation arrows take above a body, its motion included
 # Of the sheet, what the model is fitted into at least: labels fall away before it shrinks.
 LEAST_WIDE, LEAST_HIGH = 0.6, 0.5
 NEAR_LINK = 9.0  # pixels: how close to a link's line a click may be
@@ -45,7 +46,8 @@ def sheet_geometry(
     side = min(SIDE * text_scale, (1 - LEAST_WIDE) / 2 * width)
     block = MARGIN + title_size(model.title, width, text_scale)[1]
     arrows = (74.0 if lines_above(model) else 8.0) + 17.0 * lines_above(model) * text_scale
-    top = min(block + arrows, max((1 - LEAST_HIGH) * height - BOTTOM, block + 4.0))
+    least = block + (ARROWS if lines_above(model) else 4.0)
+    top = min(block + arrows, max((1 - LEAST_HIGH) * height - BOTTOM, least))
     area = (side, top, max(width - 2 * side, 40.0), max(height - top - BOTTOM, 40.0))
     return lettered(bare_geometry(model, (width, height), area, view, 1.0, text_scale))
 

@@ -34,3 +34,16 @@ def test_pressed_and_refused_texts_stand_out_too(theme):
     assert contrast(theme.on_accent, theme.accent) >= LEAST_CONTRAST
     assert contrast(theme.ink, theme.accent_pale) >= LEAST_CONTRAST
     assert contrast(theme.ink, theme.in_band_pale) >= LEAST_CONTRAST
+
+
+@pytest.mark.parametrize("theme", [LIGHT, DARK], ids=lambda one: one.name)
+def test_every_rule_of_the_style_sheet_that_sets_text_and_ground_sets_them_apart(theme):
+    text = re.sub(r"/\*.*?\*/", "", style_sheet(theme, 10.0), flags=re.DOTALL)
+    rules = re.findall(r"([^{}]+)\{([^}]*)\}", text)
+    checked = 0
+    for selector, body in rules:
+        colours = dict(re.findall(r"(?<![-\w])(color|background):\s*(#[0-9a-f]{6})", body))
+        if len(colours) == 2:
+            checked += 1
+            assert contrast(colours["color"], colours["background"]) >= LEAST_CONTRAST, selector.strip()
+    assert checked > 10
