@@ -50,6 +50,9 @@ def lettered(geometry: SheetGeometry) -> SheetGeometry:
     _name_bodies(geometry, board, inner, letters)
     if geometry.model.motion is Motion.PLANE:
         board.take(geometry.boxes + np.array([-SWAY, 0.0, SWAY, 0.0]))
+    elif geometry.model.motion is Motion.SINGLE_AXIS and geometry.text_scale > LARGE_TEXT:
+        up = USUAL * geometry.reach
+        board.take(geometry.boxes + np.array([0.0, -up, 0.0, up]))
     _name_links(geometry, board, letters)
     _name_pushes(geometry, acting, (board, inner), letters)
     return replace(

@@ -88,6 +88,7 @@ class Frame(QMainWindow):
 
     def _places(self) -> QSplitter:
         self._above = self._drawing()
+        self._kept_rows: list[int] | None = None
         self.below = Pages("Places under the sheet", self)
         self.proof = self.below.line
         for name, title, place in (
@@ -126,6 +127,18 @@ class Frame(QMainWindow):
         return above
 
     # Room
+
+    def give_room(self, name: str) -> None:
+        """Give the complex plane half of the height while it is shown."""
+        if self.below.has("sheet"):
+            return
+        if name == "plane" and self._kept_rows is None:
+            self._kept_rows = self._left.sizes()
+            half = sum(self._kept_rows) // 2
+            self._left.setSizes([half, half])
+        elif name != "plane" and self._kept_rows is not None:
+            self._left.setSizes(self._kept_rows)
+            self._kept_rows = None
 
     def resizeEvent(self, event: QResizeEvent) -> None:  # noqa: N802  (Qt's name)
         """Let places share tabs where there is no room for all of them."""

@@ -66,12 +66,12 @@ def ratio_text(mode: Any) -> str:
 
     >>> from types import SimpleNamespace as Mode
     >>> ratio_text(Mode(damping_ratio=0.0321)), ratio_text(Mode(damping_ratio=1e-12))
-    ('damping 3.21 %', 'not damped')
+    ('ratio 3.21 %', 'not damped')
     """
     ratio = mode.damping_ratio
     if ratio is None:
         return "no ratio"
-    return f"damping {significant(100 * ratio, 3)} %" if ratio >= _UNDAMPED else "not damped"
+    return f"ratio {significant(100 * ratio, 3)} %" if ratio >= _UNDAMPED else "not damped"
 
 
 def damped_facts(mode: Any) -> tuple[tuple[str, str], ...]:

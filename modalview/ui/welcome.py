@@ -3,7 +3,7 @@
 from pathlib import Path
 
 from PySide6.QtCore import QEvent, QRectF, QSize, Qt, Signal
-from PySide6.QtGui import QColor, QPainter, QPaintEvent, QPen
+from PySide6.QtGui import QColor, QFont, QFontMetrics, QPainter, QPaintEvent, QPen
 from PySide6.QtWidgets import (
     QAbstractButton,
     QGridLayout,
@@ -23,6 +23,17 @@ _JOB = (
     "its natural frequencies can and cannot lie, and proves over all tolerances whether a speed or an order "
     "of the machine meets one."
 )
+
+
+def _bold(font: QFont) -> QFont:
+    bold = QFont(font)
+    bold.setBold(True)
+    return bold
+
+
+def _wrapped_height(font: QFont, room: int, text: str) -> int:
+    wrap = Qt.TextFlag.TextWordWrap
+    return QFontMetrics(font).boundingRect(0, 0, room, 10_000, wrap, text).height()
 
 
 class ExampleButton(QAbstractButton):
@@ -52,10 +63,9 @@ class ExampleButton(QAbstractButton):
 
     def heightForWidth(self, width: int) -> int:  # noqa: N802  (Qt's name)
         """Return the height the title and the wrapped sentence need."""
-        metrics = self.fontMetrics()
         room = self._room(width)
-        wrapped = metrics.boundingRect(0, 0, room, 10_000, Qt.TextFlag.TextWordWrap, self.example.sentence)
-        return round(metrics.height() * 1.3 + wrapped.height() + 24)
+        sentence = _wrapped_height(self.font(), room, self.example.sentence)
+        return round(_wrapped_height(_bold(self.font()), room, self.text()) + sentence + 32)
 
     def sizeHint(self) -> QSize:  # noqa: N802  (Qt's name)
         """Return a size for two columns of buttons."""
@@ -76,15 +86,14 @@ class ExampleButton(QAbstractButton):
         edge = QPen(QColor(self._theme.accent if lively else self._theme.line), 2.0 if lively else 1.0)
         painter.setPen(edge)
         painter.drawRoundedRect(QRectF(self.rect()).adjusted(1.5, 1.5, -1.5, -1.5), 7, 7)
-        bold = self.font()
-        bold.setBold(True)
+        room, bold = self._room(self.width()), _bold(self.font())
+        title = _wrapped_height(bold, room, self.text())
         painter.setFont(bold)
         painter.setPen(QColor(self._theme.accent))
-        line = self.fontMetrics().height()
-        painter.drawText(QRectF(14, 10, self._room(self.width()), line * 1.2), self.text())
+        painter.drawText(QRectF(14, 10, room, title), int(Qt.TextFlag.TextWordWrap), self.text())
         painter.setFont(self.font())
         painter.setPen(QColor(self._theme.ink))
-        below = QRectF(14, 12 + line * 1.3, self._room(self.width()), self.height() - line * 1.3 - 14)
+        below = QRectF(14, 17 + title, room, self.height() - title - 19)
         painter.drawText(below, int(Qt.TextFlag.TextWordWrap), self.example.sentence)
 
     def enterEvent(self, event: QEvent) -> None:  # noqa: N802  (Qt's name)

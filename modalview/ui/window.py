@@ -183,6 +183,7 @@ class Window(Frame):
 
     def on_page_shown(self, name: str) -> None:
         """Let the sheet follow the row of modes that is in sight."""
+        self.give_room(name)
         rows = {"modes": self.modes.row, "damped": self.damped.row}
         if name in rows:
             self.on_mode_chosen(rows[name].chosen())
