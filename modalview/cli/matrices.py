@@ -121,7 +121,10 @@ def run_modes(words: argparse.Namespace) -> int:
 
 def near_frequency(words: argparse.Namespace) -> float:
     """Return the frequency of ``--near``, Hz."""
-    return _entry("near", words.near, q.FREQUENCY).si / RAD_PER_HZ
+    entry = _entry("near", words.near, q.FREQUENCY)
+    if entry.si < 0:
+        raise UsageError(f'--near must not be negative; found "{entry.text}"')
+    return entry.si / RAD_PER_HZ
 
 
 def _run_near(words: argparse.Namespace) -> int:

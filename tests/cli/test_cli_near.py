@@ -51,6 +51,7 @@ def test_history_on_request(capsys):
     [
         (["--near", "8.5"], "unit"),
         (["--near", "8 kg"], "near"),
+        (["--near", "-8 Hz"], "must not be negative"),
         (["--near", "8 Hz", "--count", "0"], "1 to 80"),
         (["--count", "3"], "go with --near"),
         (["--history"], "go with --near"),
