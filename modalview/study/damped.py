@@ -15,6 +15,7 @@ from modalview.bounds.state import StateRegions, state_regions
 from modalview.eigen.damped import find_damped_modes
 from modalview.eigen.dampedmodes import DampedModes
 from modalview.eigen.dampedratio import decrement_of_ratio, proportional_ratios
+from modalview.errors import NumericalError
 from modalview.model.parts import Model
 from modalview.study.completed import ELASTIC, RIGID
 from modalview.study.look import RAD_PER_HZ, look
@@ -128,8 +129,9 @@ def damped(request: Request, solution: Solution | None = None) -> DampedSolution
     Notes
     -----
     With any dashpot its state matrix is solved and damping given for the whole model is ignored. Without
-    one that damping gives every mode its ratio, in closed form. Of a model with too many roots none is
-    listed, and ``evidence`` says so: its undamped modes are no worse for it.
+    one that damping gives every mode its ratio, in closed form. Of a model with too many roots, or with
+    roots that cannot be computed, none is listed, and ``evidence`` says so: its undamped modes are no worse
+    for it.
     """
     start = perf_counter()
     known = solution is not None and solution.outlook.request.model is request.model
@@ -140,11 +142,14 @@ def damped(request: Request, solution: Solution | None = None) -> DampedSolution
     if has_dashpots(outlook.assembly):
         source = "dashpots"
         terms = damped_terms(outlook.assembly)
-        if terms.roots <= LARGEST:
-            raw = find_damped_modes(terms, cancelled=request.cancelled, progress=request.progress)
-            modes, evidence = _with_dashpots(outlook.assembly, terms, raw), _evidence(raw)
-        else:
+        if terms.roots > LARGEST:
             evidence = (f"{terms.roots} damped roots, none listed: they are found up to {LARGEST}",)
+        else:
+            try:
+                raw = find_damped_modes(terms, cancelled=request.cancelled, progress=request.progress)
+                modes, evidence = _with_dashpots(outlook.assembly, terms, raw), _evidence(raw)
+            except NumericalError as error:
+                evidence = (f"{terms.roots} damped roots, none listed: {error}",)
     elif request.model.damping is not None and not has_loss_factors(request.model):
         source = "model damping"
         found = solution if solution is not None and known else solve(request, outlook)

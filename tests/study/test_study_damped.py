@@ -158,6 +158,15 @@ def test_too_many_roots_do_not_take_the_modes_away(monkeypatch):
     assert result.evidence == ("4 damped roots, none listed: they are found up to 3",)
 
 
+def test_roots_that_cannot_be_computed_do_not_take_the_modes_away():
+    beyond_all_measure = [
+        {**link, **({"damping": "1e30 N s/m"} if "damping" in link else {})} for link in LIGHT
+    ]
+    result = found(MASSES, SPRINGS + beyond_all_measure)
+    assert (result.raw, result.modes) == (None, ())
+    assert result.evidence[0].startswith("4 damped roots, none listed: A root of exactly zero")
+
+
 def test_cancel():
     model = parse_model(made.line(MASSES, SPRINGS + LIGHT))
     solution = solve(Request(model))
