@@ -47,11 +47,11 @@ class Apart:
         process, line = self._running()
         try:
             line.send(outlook.request.model)
-            found, damped = await_answer(process, line, stopped, progress)
+            sent, damped = await_answer(process, line, stopped, progress)
         except (CancelledError, ProcessEndedError):
             self.close()
             raise
-        return replace(found, outlook=outlook), damped and replace(damped, outlook=outlook)
+        return replace(unpacked(sent), outlook=outlook), damped and replace(damped, outlook=outlook)
 
     def close(self) -> None:
         """End the process, whatever it does."""
@@ -100,19 +100,49 @@ def await_answer(
     raise CancelledError("Stopped by the user.")
 
 
-def _lean(solution: Any) -> Any:
-    """Leave out what who asked has already, and the shares nobody is shown: they are most of the sending."""
-    modes = tuple(
-        replace(
-            mode,
-            strain=mode.strain[:SHARES_SENT],
-            kinetic=mode.kinetic[:SHARES_SENT],
-            sensitivity=(),
+_SHARES = ("strain", "kinetic", "effective_mass")
+_PLAIN = ("number", "name", "frequency_hz", "numerical_error_hz", "range_hz", "kind", "repeated_with")
+
+
+def packed(solution: Any) -> tuple[Any, Any, Any]:
+    """Return a solution as what is quick to read back: no outlook, no shapes, modes as plain tuples.
+
+    Unpickling an object of our own classes holds the interpreter lock; of 10,000 of them, a tenth of a second.
+    """
+    raw = replace(solution.raw, shapes=solution.raw.shapes[:, :0])
+    rest = replace(solution, outlook=None, modes=(), raw=raw)
+    plain = [
+        (
+            tuple(getattr(mode, name) for name in _PLAIN),
+            tuple(
+                tuple((one.id, one.label, one.fraction) for one in getattr(mode, name)[:SHARES_SENT])
+                for name in _SHARES
+            ),
         )
         for mode in solution.modes
-    )
-    raw = replace(solution.raw, shapes=solution.raw.shapes[:, :0])
-    return replace(solution, outlook=None, modes=modes, raw=raw)
+    ]
+    return rest, plain, _stacked(solution.modes)
+
+
+def _stacked(modes: Any) -> Any:
+    import numpy as np  # noqa: PLC0415  (in the other process only)
+
+    return np.stack([mode.motion for mode in modes]) if modes else []
+
+
+def unpacked(sent: tuple[Any, Any, Any]) -> Any:
+    """Return the solution that was packed; sensitivities and shapes stay behind."""
+    from modalview.study.results import FoundMode, Share  # noqa: PLC0415  (numpy comes later)
+
+    rest, plain, motions = sent
+    modes = []
+    for (values, shares), motion in zip(plain, motions, strict=True):
+        motion.setflags(write=False)
+        named = {name: tuple(Share(*one) for one in some) for name, some in zip(_SHARES, shares, strict=True)}
+        modes.append(
+            FoundMode(**dict(zip(_PLAIN, values, strict=True)), **named, sensitivity=(), motion=motion)
+        )
+    return replace(rest, modes=tuple(modes))
 
 
 def serve(line: Connection) -> None:
@@ -135,7 +165,7 @@ def serve(line: Connection) -> None:
             dying = None
             if has_dashpots(previous.assembly):
                 dying = replace(damped(request, found), outlook=None, raw=None)
-            answer = "found", (_lean(found), dying)
+            answer = "found", (packed(found), dying)
         except KeepclearError as error:
             answer = "refused", str(error)
         except Exception:  # noqa: BLE001  (the other process has nobody else to tell)

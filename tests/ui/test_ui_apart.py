@@ -67,10 +67,24 @@ def test_the_other_process_sends_progress_and_then_what_it_found():
     *before, (kind, found) = answers_of_the_other_process(read_model(PUMP))
     assert {kind for kind, _ in before} <= {"progress"}
     assert kind == "found"
-    found, damped = found
+    sent, damped = found
     assert damped is None
+    found = apart.unpacked(sent)
     assert found.outlook is None
     assert found.modes[0].frequency_hz == pytest.approx(51.26, abs=0.01)
+
+
+def test_what_is_packed_is_read_back_with_its_largest_shares():
+    model = read_model(PUMP)
+    study = load_study()
+    solution = study.solve(study.request(model), outlook_of(model))
+    again = apart.unpacked(apart.packed(solution))
+    assert again.sentence == solution.sentence
+    for one, other in zip(again.modes, solution.modes, strict=True):
+        assert (one.motion == other.motion).all()
+        assert not one.motion.flags.writeable
+        assert one.strain == other.strain[: apart.SHARES_SENT]
+        assert one.range_hz == other.range_hz
 
 
 def test_a_model_that_cannot_be_solved_is_told_in_words_and_the_next_is_solved():
@@ -116,12 +130,12 @@ def test_a_larger_chain_is_solved_apart_stopped_and_solved_again():
     outlook = outlook_of(chain(160))
     told = []
     try:
-        found = other.solve(outlook, lambda: False, lambda *step: told.append(step))
+        found, _ = other.solve(outlook, lambda: False, lambda *step: told.append(step))
         assert found.outlook is outlook
         assert len(found.modes) == 160
         assert told
         with pytest.raises(CancelledError):
             other.solve(outlook, lambda: True, untold)
-        assert len(other.solve(outlook, lambda: False, untold).modes) == 160
+        assert len(other.solve(outlook, lambda: False, untold)[0].modes) == 160
     finally:
         other.close()
