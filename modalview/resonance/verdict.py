@@ -132,26 +132,36 @@ def _nominal_only(question: Question, count: BandCount) -> Check:
     if count.possible is None:
         reason = f"rounding leaves undecided whether some values within tolerance reach {text}"
     else:
-        deciding, both = _deciding_case(question, count)
-        reach = f"the {deciding} case reaches" if deciding else "the tolerance of the speed alone reaches"
-        reach = "the soft-heavy and the stiff-light case both reach" if both else reach
+        deciding, reach = _deciding_case(question, count)
         reason = f"no mode lies in the band at nominal values, but {reach} {text}{_exactly(question)}"
     return _check(question, count, Verdict.NOMINAL_ONLY, Verdict.NOMINAL_ONLY.value, reason, deciding)
 
 
-def _deciding_case(question: Question, count: BandCount) -> tuple[str | None, bool]:
-    """Return which case brings a mode into a band that is empty at nominal values, and whether both do.
+def _deciding_case(question: Question, count: BandCount) -> tuple[str | None, str]:
+    """Return which case brings a mode into a band that is empty at nominal values, and what does in words.
 
     Soft-heavy brings modes down past the upper edge, stiff-light up past the lower one; the one that
-    moves more where both do. None where the band as widened by the speed tolerance holds a mode at
-    nominal values already.
+    moves more where both do. None where the tolerance of the speed does so and no values do.
     """
-    here = question.counted_at_nominal()
-    if here.inside != 0:
-        return None, False
-    fallen = _number(count, "soft-heavy", "at most") - _number(here, "nominal", "at most")
-    risen = _number(here, "nominal", "below") - _number(count, "stiff-light", "below")
-    return "soft-heavy" if fallen >= risen else "stiff-light", min(fallen, risen) > 0
+    if question.tolerance == question.nominal:
+        return _case_of(count, count)
+    values = count_band_by(question.counters, question.nominal, question.nominal)
+    speed = question.counted_at_nominal()
+    if values.possible:
+        case, reach = _case_of(values, values)
+        return case, f"{reach} (and so does the tolerance of the speed alone)" if speed.inside else reach
+    if speed.inside:
+        return None, "the tolerance of the speed alone reaches"
+    case, _ = _case_of(count, speed)
+    return case, f"the {case} case together with the tolerance of the speed reaches"
+
+
+def _case_of(count: BandCount, nominal: BandCount) -> tuple[str, str]:
+    fallen = _number(count, "soft-heavy", "at most") - _number(nominal, "nominal", "at most")
+    risen = _number(nominal, "nominal", "below") - _number(count, "stiff-light", "below")
+    case = "soft-heavy" if fallen >= risen else "stiff-light"
+    both = min(fallen, risen) > 0
+    return case, "the soft-heavy and the stiff-light case both reach" if both else f"the {case} case reaches"
 
 
 def _number(count: BandCount, case: str, side: str) -> int:

@@ -68,12 +68,19 @@ class TestNominalOnly:
         # 10 %: 18 to 33 Hz holds 32 Hz.
         found = check([(32, None)], speed_tolerance="10 %")
         assert (found.verdict, found.deciding_case) == (Verdict.NOMINAL_ONLY, None)
-        assert "the tolerance of the speed alone" in found.reason
+        assert "but the tolerance of the speed alone reaches" in found.reason
+
+    def test_a_case_that_reaches_the_band_is_named_though_the_speed_tolerance_reaches_it_too(self):
+        # 32 Hz lies in 18 to 33 Hz already, and soft it is 29.6 Hz: in 20 to 30 Hz without any of it.
+        found = check([(32, "15 %")], speed_tolerance="10 %")
+        assert (found.verdict, found.deciding_case) == (Verdict.NOMINAL_ONLY, "soft-heavy")
+        assert "the soft-heavy case reaches (and so does the tolerance of the speed alone)" in found.reason
 
     def test_speed_and_value_together_name_the_case(self):
         # 34 Hz is above 33 Hz, soft it is 32.3 Hz: above 30 Hz, below 33 Hz.
         found = check([(34, "10 %")], speed_tolerance="10 %")
         assert (found.verdict, found.deciding_case) == (Verdict.NOMINAL_ONLY, "soft-heavy")
+        assert "the soft-heavy case together with the tolerance of the speed reaches" in found.reason
         assert check([(34, "10 %")]).verdict is Verdict.CLEAR
         assert check([(34, None)], speed_tolerance="10 %").verdict is Verdict.CLEAR
 
