@@ -7,6 +7,7 @@ from pathlib import Path
 from modalview.drawing.palette import LIGHT, Palette
 from modalview.drawing.primitives import Drawing, Role
 from modalview.errors import FileAccessError
+from modalview.store.saving import put_in_place
 
 # Pixels of the file per pixel of the drawing: sharp in print.
 DETAIL = 2.0
@@ -39,7 +40,7 @@ def save_picture(
         )
     data = _png(drawing, (width, height), palette, detail)
     try:
-        path.write_bytes(data)
+        put_in_place(path, data, like=path if path.exists() else None)
     except OSError as error:
         raise FileAccessError(f"{path}: the picture cannot be written: {error.strerror or error}") from error
 

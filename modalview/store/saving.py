@@ -85,8 +85,8 @@ def save_model(model: Model, path: str | os.PathLike[str], *, known: FileStamp |
         target = Path(os.path.realpath(path))
         _check_target(target, known)
         if target.exists():
-            _replace(target.with_name(target.name + BACKUP_SUFFIX), target.read_bytes(), like=target)
-        _replace(target, data, like=target if target.exists() else None)
+            put_in_place(target.with_name(target.name + BACKUP_SUFFIX), target.read_bytes(), like=target)
+        put_in_place(target, data, like=target if target.exists() else None)
         return _stamp(target, data)
     except (OSError, ValueError) as fault:
         why = getattr(fault, "strerror", None) or str(fault)
@@ -119,8 +119,11 @@ def _check_target(target: Path, known: FileStamp | None) -> None:
         )
 
 
-def _replace(target: Path, data: bytes, *, like: Path | None) -> None:
-    """Put ``data`` in the place of ``target`` in one step, with the permissions of ``like``."""
+def put_in_place(target: Path, data: bytes, *, like: Path | None = None) -> None:
+    """Put ``data`` in the place of ``target`` in one step, with the permissions of ``like``.
+
+    Written beside it, flushed, then renamed: on a full disk (OSError) what was there stays.
+    """
     beside = target.with_name(f".{target.name}.{secrets.token_hex(4)}.tmp")
     try:
         with _open_new(beside) as file:
