@@ -30,7 +30,7 @@ def test_a_full_disk_leaves_the_picture_that_was_there(tmp_path, monkeypatch, ca
     picture = tmp_path / "sheet.png"
     picture.write_bytes(b"the picture of yesterday")
     monkeypatch.setattr(saving, "_open_new", _FullDisk)
-    assert main(["picture", str(PUMP), "-o", str(picture), "--size", "400x300"]) == 2
+    assert main(["picture", str(PUMP), "-o", str(picture), "--size", "800x600"]) == 2
     assert "cannot be written: No space left on device" in capsys.readouterr().err
     assert picture.read_bytes() == b"the picture of yesterday"
     assert [path.name for path in tmp_path.iterdir()] == ["sheet.png"]
