@@ -57,13 +57,12 @@ def solve_large(request: Request, outlook: Outlook) -> Solution:
     """
     start = perf_counter()
     assembly = outlook.assembly
-    targets = _targets(outlook.checks)
-    if not targets:
+    if not outlook.checks:
         raise InputError(
             f"The model has {assembly.pencil().modes} modes, too many to be found at once, and no machine "
             "whose excitations tell which matter. Ask for the modes near a frequency: --near."
         )
-    windows = [_window(request, assembly, omega, i, len(targets)) for i, omega in enumerate(targets)]
+    windows = _windows(request, assembly, outlook.checks)
     raw, ranges, numbers = _merged(windows)
     modes = found_modes(assembly, raw, ranges, numbers)
     checks = tuple(
@@ -81,27 +80,37 @@ def solve_large(request: Request, outlook: Outlook) -> Solution:
     )
 
 
-def _targets(checks: Sequence[Check]) -> tuple[float, ...]:
-    """Return the angular frequencies whose nearest modes complete the checks.
+def _windows(request: Request, assembly: Assembly, checks: Sequence[Check]) -> list[_Window]:
+    """Find the modes that complete the checks.
 
-    The middle of a range (in squares) that has a mode within: the nearest one to it is such a mode. Both
-    ends of one that may have none.
+    Those nearest to the middle of a range (in squares): if any lies in the range, the nearest does. Those
+    nearest to its ends where none does.
     """
-    found: dict[float, None] = {}
-    for check in checks:
+    found: dict[float, _Window] = {}
+    for place, check in enumerate(checks):
         low, high = check.band.excitation
+        share = (place / len(checks), 1 / len(checks))
+        middle = float(np.sqrt((low**2 + high**2) / 2))
         if check.inside and high > low:
-            found[float(np.sqrt((low**2 + high**2) / 2))] = None
-        found.update({low: None, high: None})
-    return tuple(found)
+            found[middle] = found.get(middle) or _window(request, assembly, middle, share)
+            values = found[middle].near.modes.eigenvalues
+            if bool(np.any((values >= low**2) & (values <= high**2))):
+                continue
+        for omega in (low, high):
+            found[omega] = found.get(omega) or _window(request, assembly, omega, share)
+    return list(found.values())
 
 
-def _window(request: Request, assembly: Assembly, omega: float, place: int, places: int) -> _Window:
-    """Find modes until one lies on either side of a frequency, then their ranges."""
+def _window(request: Request, assembly: Assembly, omega: float, progress: tuple[float, float]) -> _Window:
+    """Find modes until one lies on either side of a frequency, then their ranges.
+
+    ``progress``: the share done before, and the share that this takes.
+    """
+    done, whole = progress
 
     def told(what: str, share: float) -> None:
         if request.progress is not None:
-            request.progress(what, (place + 0.4 * share) / places)
+            request.progress(what, done + 0.4 * share * whole)
 
     asked, pencil = ASKED, assembly.pencil()
     while True:
@@ -113,7 +122,7 @@ def _window(request: Request, assembly: Assembly, omega: float, place: int, plac
             break
         asked *= 2
     if request.progress is not None:
-        request.progress("range over all tolerances", (place + 0.5) / places)
+        request.progress("range over all tolerances", done + 0.5 * whole)
     return _Window(near, ranges_by_number(assembly, near, request.cancelled))
 
 
