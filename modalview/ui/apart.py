@@ -107,7 +107,7 @@ _PLAIN = ("number", "name", "frequency_hz", "numerical_error_hz", "range_hz", "k
 def packed(solution: Any) -> tuple[Any, Any, Any]:
     """Return a solution as what is quick to read back: no outlook, no shapes, modes as plain tuples.
 
-    Unpickling an object of our own classes holds the interpreter lock; of 10,000 of them, a tenth of a second.
+    Unpickling objects of our own classes holds the interpreter lock: 10,000 of them for a tenth of a second.
     """
     raw = replace(solution.raw, shapes=solution.raw.shapes[:, :0])
     rest = replace(solution, outlook=None, modes=(), raw=raw)

@@ -16,8 +16,8 @@ from modalview.ui.swing import Swing
 from modalview.ui.theme import LIGHT, Theme
 
 FRAME_MS = 16
-# More bodies than this are laid out in a thread.
-AT_ONCE = 30
+# More bodies and links than this are laid out in a thread.
+AT_ONCE = 24
 # An edited model is laid out anew when its verdict is shown, or after the longer time.
 SOON_MS, LATER_MS = 15, 250
 # Painting a frame takes at most this share of the time.
@@ -153,7 +153,7 @@ class Sheet(QWidget):
             text_scale=self._text_scale,
             view=self._view,
         )
-        if len(self._model.bodies) <= AT_ONCE:
+        if len(self._model.bodies) + len(self._model.links) <= AT_ONCE:
             self._background.forget()
             self._show_geometry("sheet", lay_out())
         else:
