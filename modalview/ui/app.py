@@ -68,7 +68,7 @@ def run(file: Path | None, without_screen: str) -> int:
 def close_on_interrupt(window: Window) -> None:
     """Let Ctrl+C in the terminal close the window as its own button does, asking about unsaved changes.
 
-    Python's handler runs in the middle of whatever runs, painting too, so it only orders the closing. While Qt
+    The handler runs in the middle of whatever runs, painting too, so it only orders the closing. While Qt
     waits no Python runs at all: the timer lets it look for a signal four times a second.
     """
     signal.signal(signal.SIGINT, lambda *_: QTimer.singleShot(0, window, window.close))
