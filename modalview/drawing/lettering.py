@@ -27,6 +27,7 @@ SLANT = 14.0  # pixels of slant for each
 CROWD = 24  # with more bodies than this their texts stay on them, or shrink to a name beside
 USUAL = 0.6  # times the reach: how far parts move at the amplitude the window starts with
 LARGE_TEXT = 1.25  # times the size: texts larger than this fall away rather than stand far off
+LEADER_MARKS = 24  # places along a leader at which it is looked at
 ALIKE_TRIES = 6  # of links that share their text, so many are tried with a leader
 APART = 40.0  # pixels: a text further from its link has a leader
 SHORT = 110.0  # pixels: shorter links may be written at the side of the body they carry
@@ -284,7 +285,7 @@ def _name_link(
     beside = _beside(geometry, number)
     if _placed_beside(geometry, board, letters, number, lines, beside):
         return
-    far = ring_about(*middle.tolist())
+    far = _free_of_texts(geometry, letters, middle, ring_about(*middle.tolist()))
     tries = [(lines[:1], beside), (lines[:1], far)]
     if geometry.text_scale <= LARGE_TEXT:
         tries.insert(0, (lines, far))
@@ -292,6 +293,24 @@ def _name_link(
         if _placed_beside(geometry, board, letters, number, some, spots):
             return
     letters.unlabelled.append(geometry.model.links[number].id)
+
+
+def _free_of_texts(
+    geometry: SheetGeometry, letters: _Letters, middle: Floats, spots: list[Spot]
+) -> list[Spot]:
+    """Keep the spots whose leader to a link crosses no body and no text; all of them if each does."""
+    if geometry.model.motion is Motion.SPACE or len(geometry.model.bodies) > CROWD:
+        return spots
+    texts = [*letters.labels, *(text for _, text in letters.body_labels)]
+    written = np.array([extent([text], geometry.text_scale) for text in texts]).reshape(-1, 4)
+    taken = np.vstack([written, geometry.boxes])
+    ends = np.array([(spot.x, spot.y) for spot in spots])
+    shares = np.linspace(0.05, 0.95, LEADER_MARKS)[:, None, None]
+    marks = middle + shares * (ends - middle)
+    x, y = marks[..., 0, None], marks[..., 1, None]
+    crossed = (x > taken[:, 0]) & (x < taken[:, 2]) & (y > taken[:, 1]) & (y < taken[:, 3])
+    free = np.flatnonzero(~np.asarray(crossed.any(axis=(0, 2))))
+    return [spots[number] for number in free.tolist()] or spots
 
 
 def _placed_beside(
