@@ -65,6 +65,8 @@ class Hunt:
                     break
                 continue
             self.step("counts", 0.8)
+            for search in self.searches:
+                search.forget_factors()
             edges = edges_in(self._shifted, self.asked, gap)
             missing = self._missing(edges)
             if ROOM * edges.uncertainty >= gap[1] - gap[0] or min(missing) < 0:

@@ -219,6 +219,10 @@ class Search:
         self._operator = inverse
         return inverse
 
+    def forget_factors(self) -> None:
+        """Let go of the factorization, the most memory by far; a further search makes it anew."""
+        self._operator = None
+
     def polished(self, reach: float) -> Array:
         """Return shapes (n, k) of the modes found nearer than ``reach``, refined from the terms, ascending.
 
