@@ -24,7 +24,7 @@ def main() -> None:
     """Print the table."""
     model = plane_model()
     address = ("links", "k3", "stiffness", "y")
-    edits = cycle(set_value_text(model, address, f"{1 + 0.01 * i} MN/m").apply(model) for i in range(1, 40))
+    edits = cycle([set_value_text(model, address, f"{1 + 0.01 * i} MN/m").apply(model) for i in range(1, 40)])
     outlook = look(Request(model))
     S = outlook.assembly.pencil().standard.toarray()
 
