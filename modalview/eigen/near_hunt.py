@@ -70,7 +70,8 @@ class Hunt:
             edges = edges_in(self._shifted, self.asked, gap)
             missing = self._missing(edges)
             if ROOM * edges.uncertainty >= gap[1] - gap[0] or min(missing) < 0:
-                room = max(2 * room, ROOM * min(edges.uncertainty, room))
+                seen = edges.uncertainty if np.isfinite(edges.uncertainty) else room
+                room = ROOM * max(room, seen)
                 continue
             self.edges, self.reach = edges, edges.radius
             if not any(missing):
