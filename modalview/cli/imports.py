@@ -44,9 +44,17 @@ def run_import(words: argparse.Namespace) -> int:
     found = import_network(words.nodes, words.springs, Motion(words.motion), units)
     save_model(found.model, target, known=None)
     model = found.model
-    parts = [f"{len(model.bodies)} nodes with mass", f"{len(model.supports)} on the ground"]
-    say(f"{target} written: {', '.join(parts)}, {len(model.links)} springs, {model.motion}")
+    parts = [
+        _counted(len(model.bodies), "node", "nodes") + " with mass",
+        f"{len(model.supports)} on the ground",
+        _counted(len(model.links), "spring", "springs"),
+    ]
+    say(f"{target} written: {', '.join(parts)}, {model.motion}")
     for note in found.notes:
         say(note)
     say("It has no machine yet: add its speed, orders and the margin wanted before a check.")
     return OK
+
+
+def _counted(number: int, one: str, many: str) -> str:
+    return f"{number} {one if number == 1 else many}"
