@@ -9,8 +9,10 @@ import numpy as np
 from modalview.assembly.pencil import Pencil
 from modalview.eigen.near import find_near
 from modalview.errors import NumericalError
-from modalview.factor.counts import FIRST_SHARE, LARGEST_SHARE, Count
+from modalview.factor.counts import FIRST_SHARE, LARGEST_SHARE, STAND_OFF, Count
 
+# Factorizations at an edge: one to see the rounding there, one at a distance that it proves.
+TRIES = 2
 # Above zero nothing lies below an edge of this square: the rigid-body modes alone.
 NOTHING = 0.0
 
@@ -28,10 +30,13 @@ class GapCounter:
     pencil : Pencil
     cancelled : callable
         As for `find_near`.
+    share : float
+        An edge may move outward by this share of itself before the modes around it are looked for.
     """
 
     pencil: Pencil
     cancelled: Callable[[], bool]
+    share: float = LARGEST_SHARE
     _rounding: float = field(default=0.0)
 
     def at_most(self, edge: float | Fraction) -> Count:
@@ -47,11 +52,13 @@ class GapCounter:
         rigid = shifted.rigid_modes
         if shifted.definite and lam <= 0:
             return Count(rigid, lam, 0.0, "a sum of positive stiffness terms has none below zero")
-        if self._rounding <= LARGEST_SHARE * lam:
-            found = shifted.factorize(lam * (1 + side * max(FIRST_SHARE, 1.25 * self._rounding / lam)))
+        for _ in range(TRIES):
+            if self._rounding > self.share * lam:
+                break
+            found = shifted.factorize(lam * (1 + side * max(FIRST_SHARE, STAND_OFF * self._rounding / lam)))
             self._rounding = min(found.uncertainty, lam)
             clearance = side * (found.sigma - lam)
-            if found.uncertainty < clearance and clearance + found.uncertainty <= LARGEST_SHARE * lam:
+            if found.uncertainty < clearance and clearance + found.uncertainty <= self.share * lam:
                 return Count(max(found.negative, rigid), found.sigma, found.uncertainty, found.method)
         return self._in_gaps(lam, side)
 

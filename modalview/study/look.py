@@ -10,9 +10,10 @@ from modalview.bounds.before import before_solve
 from modalview.eigen.near_count import GapCounter
 from modalview.eigen.solve import LARGEST
 from modalview.errors import CancelledError
+from modalview.factor.counts import LARGEST_SHARE
 from modalview.resonance.bands import bands
 from modalview.resonance.exactly import judge_exactly
-from modalview.resonance.results import Check
+from modalview.resonance.results import Check, Verdict
 from modalview.resonance.unchecked import not_checked
 from modalview.resonance.verdict import BY_COUNTS, Exactness, Question, answer, worst
 from modalview.study.intervals import scale_intervals
@@ -20,6 +21,9 @@ from modalview.study.results import Outlook, Request
 from modalview.study.sentence import sentence
 
 RAD_PER_HZ = 2 * math.pi
+# Edges of bands of a large model may first move outward by this share, which can only make a verdict stricter;
+# where fewer modes than this are inside, the edges are then counted sharply.
+ROUGHLY, MANY = 1e-4, 100
 
 
 def look(request: Request, previous: Outlook | None = None) -> Outlook:
@@ -65,22 +69,36 @@ def _checks(request: Request, assembly: Assembly) -> tuple[tuple[Check, ...], tu
     exactness = Exactness(len(assembly.exact_values), len(assembly.matter))
     if request.exact:
         return _exact_checks(request, assembly, exactness)
-    counters, modes = _counters(request, assembly), assembly.pencil().modes
+    modes = assembly.pencil().modes
+    rough, sharp = _counters(request, assembly)
     found = []
     for band in bands(request.model):
         _stop_if(request)
-        question = Question(band, band.nominal, band.tolerance, counters, modes, BY_COUNTS)
-        found.append(answer(question, exactness))
+        check = answer(Question(band, band.nominal, band.tolerance, rough, modes, BY_COUNTS), exactness)
+        if rough is not sharp and check.verdict is not Verdict.CLEAR and (check.inside or 0) < MANY:
+            check = answer(Question(band, band.nominal, band.tolerance, sharp, modes, BY_COUNTS), exactness)
+        found.append(check)
     return tuple(found), ()
 
 
-def _counters(request: Request, assembly: Assembly) -> Counters:
-    """Return what counts the three cases: large models where pivots do not decide, between their modes."""
+def _counters(request: Request, assembly: Assembly) -> tuple[Counters, Counters]:
+    """Return what counts the three cases: roughly, and sharply for bands where that may matter.
+
+    Of small models one and the same. Edges of large ones may first move outward farther, which can only add
+    modes to a band; where pivots do not decide, counts are made in the gaps between modes.
+    """
     pencils = [assembly.pencil(case) for case in Case]
     if pencils[0].modes <= LARGEST:
-        return Cases(*(pencil.shifted for pencil in pencils)).counters()
-    made = {id(pencil): GapCounter(pencil, request.cancelled) for pencil in pencils}
-    return Counters(*(made[id(pencil)] for pencil in pencils))
+        only = Cases(*(pencil.shifted for pencil in pencils)).counters()
+        return only, only
+    rough, sharp = (
+        {id(pencil): GapCounter(pencil, request.cancelled, share) for pencil in pencils}
+        for share in (ROUGHLY, LARGEST_SHARE)
+    )
+    return (
+        Counters(*(rough[id(pencil)] for pencil in pencils)),
+        Counters(*(sharp[id(pencil)] for pencil in pencils)),
+    )
 
 
 def _exact_checks(
