@@ -9,7 +9,7 @@ import numpy.typing as npt
 from modalview.assembly.pencil import Pencil
 from modalview.eigen.near_certificate import Edges, edges_in
 from modalview.eigen.near_pieces import pieces
-from modalview.eigen.near_search import Search
+from modalview.eigen.near_search import MOST_STARTS, Search
 
 Array = npt.NDArray[np.float64]
 
@@ -17,12 +17,13 @@ Array = npt.NDArray[np.float64]
 MOST_WITH_TIES = 400
 # Distances nearer to each other than this, relatively, are a tie: never cut.
 TIE = 1e-6
-# A gap must hold so many times the uncertainty of the counts made in it.
-ROOM = 4.0
+# A gap must hold so many times the uncertainty of the counts made in its middle: twice, and a little room.
+ROOM = 2.2
 # Windows tried until the counts agree with what was found.
 TRIES = 12
-# Modes looked for at a time where no gap is in sight yet.
-MORE = 4
+# Modes looked for at a time where no gap is in sight yet; a spectrum so dense that none comes among so many
+# times the modes asked for (and a few dozen) is left undecided.
+MORE, PATIENCE = 4, 3
 
 
 class Hunt:
@@ -121,7 +122,7 @@ class Hunt:
     def _more(self) -> bool:
         """Look for a few more modes in the piece whose view ends nearest."""
         nearest = min(self.searches, key=lambda search: search.frontier)
-        if nearest.left == 0 or self._distances().size > MOST_WITH_TIES:
+        if nearest.left == 0 or self._distances().size > PATIENCE * self.count + MOST_STARTS:
             return False
         nearest.find(max(MORE, nearest.values.size // 2))
         return True

@@ -62,11 +62,12 @@ def solve_large(request: Request, outlook: Outlook) -> Solution:
             f"The model has {assembly.pencil().modes} modes, too many to be found at once, and no machine "
             "whose excitations tell which matter. Ask for the modes near a frequency: --near."
         )
-    windows = _windows(request, assembly, outlook.checks)
+    of_checks = _windows(request, assembly, outlook.checks)
+    windows = list({id(window): window for own in of_checks for window in own}.values())
     raw, ranges, numbers = _merged(windows)
     modes = found_modes(assembly, raw, ranges, numbers)
     checks = tuple(
-        completed(check, modes, partial(drives_of, assembly, check, raw, numbers)) for check in outlook.checks
+        _completed(assembly, check, own) for check, own in zip(outlook.checks, of_checks, strict=True)
     )
     return Solution(
         outlook=outlook,
@@ -80,13 +81,14 @@ def solve_large(request: Request, outlook: Outlook) -> Solution:
     )
 
 
-def _windows(request: Request, assembly: Assembly, checks: Sequence[Check]) -> list[_Window]:
-    """Find the modes that complete the checks.
+def _windows(request: Request, assembly: Assembly, checks: Sequence[Check]) -> list[tuple[_Window, ...]]:
+    """Find the modes that complete each check.
 
     Those nearest to the middle of a range (in squares): if any lies in the range, the nearest does. Those
     nearest to its ends where none does.
     """
     found: dict[float, _Window] = {}
+    of_checks = []
     for place, check in enumerate(checks):
         low, high = check.band.excitation
         share = (place / len(checks), 1 / len(checks))
@@ -95,10 +97,21 @@ def _windows(request: Request, assembly: Assembly, checks: Sequence[Check]) -> l
             found[middle] = found.get(middle) or _window(request, assembly, middle, share)
             values = found[middle].near.modes.eigenvalues
             if bool(np.any((values >= low**2) & (values <= high**2))):
+                of_checks.append((found[middle],))
                 continue
         for omega in (low, high):
             found[omega] = found.get(omega) or _window(request, assembly, omega, share)
-    return list(found.values())
+        of_checks.append(tuple(found[omega] for omega in dict.fromkeys((low, high))))
+    return of_checks
+
+
+def _completed(assembly: Assembly, check: Check, windows: Sequence[_Window]) -> Check:
+    """Complete a check by its own windows; as it is where counts leave their modes' numbers open."""
+    if any(window.near.numbers is None for window in windows):
+        return check
+    raw, ranges, numbers = _merged(windows)
+    modes = found_modes(assembly, raw, ranges, numbers)
+    return completed(check, modes, partial(drives_of, assembly, check, raw, numbers))
 
 
 def _window(request: Request, assembly: Assembly, omega: float, progress: tuple[float, float]) -> _Window:
@@ -187,7 +200,10 @@ def _evidence(assembly: Assembly, raw: Modes, windows: Sequence[_Window]) -> tup
         False: "counts disagree: do not rely on this",
         None: "counts undecided",
     }[raw.complete]
-    spans = ", ".join(window_text(window.near) for window in windows)
+    spans = ", ".join(
+        f"{window_text(window.near)}{'' if window.near.numbers else ' (undecided: numbers are not told)'}"
+        for window in windows
+    )
     worst = float((raw.numerical_error_hz / np.maximum(raw.frequency_hz, np.finfo(float).tiny)).max())
     return (
         f"{raw.number} of {assembly.pencil().modes} modes found, those nearest to the excitations: {proven}",

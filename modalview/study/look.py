@@ -21,9 +21,9 @@ from modalview.study.results import Outlook, Request
 from modalview.study.sentence import sentence
 
 RAD_PER_HZ = 2 * math.pi
-# Edges of bands of a large model may first move outward by this share, which can only make a verdict stricter;
+# Edges of bands of a large model may first move outward by this share: that can only make a verdict stricter;
 # where fewer modes than this are inside, the edges are then counted sharply.
-ROUGHLY, MANY = 1e-4, 100
+ROUGHLY, MANY = 1e-3, 100
 
 
 def look(request: Request, previous: Outlook | None = None) -> Outlook:
