@@ -88,7 +88,7 @@ def _windows(request: Request, assembly: Assembly, checks: Sequence[Check]) -> l
     nearest to its ends where none does.
     """
     found: dict[float, _Window] = {}
-    of_checks = []
+    of_checks: list[tuple[_Window, ...]] = []
     for place, check in enumerate(checks):
         low, high = check.band.excitation
         share = (place / len(checks), 1 / len(checks))
