@@ -29,6 +29,7 @@ def prepare(parser: argparse.ArgumentParser) -> None:
     parser.add_argument(
         "-o", "--output", type=Path, required=True, metavar=f"OUT{SUFFIX}", help="where the model goes"
     )
+    parser.add_argument("--decimal-comma", action="store_true", help='"1,200" is 1.2, where it may be 1200')
     parser.add_argument("--replace", action="store_true", help="write over a file; it is kept as .bak")
     parser.set_defaults(run=run_import)
 
@@ -41,7 +42,8 @@ def run_import(words: argparse.Namespace) -> int:
     if target.exists() and not words.replace:
         raise FileAccessError(f"{target} is there already; choose another name, or say --replace")
     units = {quantity: text for name, quantity in UNITS if (text := getattr(words, f"{name}_unit"))}
-    found = import_network(words.nodes, words.springs, Motion(words.motion), units)
+    motion, commas = Motion(words.motion), words.decimal_comma
+    found = import_network(words.nodes, words.springs, motion, units, commas_decimal=commas)
     save_model(found.model, target, known=None)
     model = found.model
     parts = [

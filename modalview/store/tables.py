@@ -12,9 +12,12 @@ from pathlib import Path
 
 from modalview.errors import Fault, FileFaultsError
 from modalview.store.reading import read_bytes
+from modalview.units.numbers import split_number
 
 # Told by the first line: what separates cells. A comma comes last, since it may be a decimal sign.
 SEPARATORS = (";", "\t", ",")
+# Some spreadsheets write this line before the headings, and do not count it as a row.
+_NAMED_SEPARATOR = re.compile(r'"?sep=(;|,|\t)"?;*,*\r?\n', re.IGNORECASE)
 
 # A number with one comma between groups of three digits: "1,200" may be 1.2 or 1200.
 _LIKE_THOUSANDS = re.compile(r"[+-]?[1-9][0-9]{0,2},[0-9]{3}", re.ASCII)
@@ -48,7 +51,7 @@ class Table:
 def read_table(path: Path) -> Table:
     """Read a table with one line of headings; comma, semicolon or tab between the cells.
 
-    Empty rows, and rows that start with #, are passed over.
+    Empty rows, and rows that start with #, are passed over. A line ``sep=;`` at the top names the separator.
 
     Raises
     ------
@@ -58,9 +61,7 @@ def read_table(path: Path) -> Table:
         It is no text, has no headings or no rows, or rows do not fit the headings; all are named.
     """
     name = path.name
-    text = _decoded(read_bytes(path), name)
-    first = next((line for line in text.splitlines() if line.strip() and not line.startswith("#")), "")
-    separator = next((one for one in SEPARATORS if one in first), ",")
+    text, separator = _separated(_decoded(read_bytes(path), name))
     try:
         found = list(csv.reader(io.StringIO(text, newline=""), delimiter=separator, strict=True))
     except csv.Error as error:
@@ -75,6 +76,15 @@ def read_table(path: Path) -> Table:
         raise FileFaultsError((Fault(name, f"holds {what}"),))
     (_, headings), *rows = lines
     return Table(name, headings, _fitting(rows, headings, name, separator), separator)
+
+
+def _separated(text: str) -> tuple[str, str]:
+    """Return the table without a line that names its separator, and the separator."""
+    named = _NAMED_SEPARATOR.match(text)
+    if named:
+        return text[named.end() :], named[1]
+    first = next((line for line in text.splitlines() if line.strip() and not line.startswith("#")), "")
+    return text, next((one for one in SEPARATORS if one in first), ",")
 
 
 def _decoded(data: bytes, name: str) -> str:
@@ -106,24 +116,45 @@ def _fitting(
     return tuple(found)
 
 
-def comma_is_decimal(table: Table, columns: Sequence[int]) -> bool:
-    """Tell whether the commas in these columns are decimal signs.
+def decimal_comma(table: Table, columns: Sequence[int], *, told: bool = False) -> str:
+    """Return a cell of these columns whose comma is a decimal sign; "" where no cell has a comma.
+
+    Parameters
+    ----------
+    table : Table
+    columns : sequence of int
+        Those that hold numbers.
+    told : bool
+        True where the person says that commas are decimal signs.
 
     Raises
     ------
     FileFaultsError
-        The numbers can be read both ways: "1,200" alone is 1.2 or 1200. Between semicolons a comma is always
-        decimal, since the comma is not needed there to separate cells.
+        Every number with a comma can be read both ways: "1,200" alone is 1.2 or 1200, also between semicolons.
     """
     cells = [(row, column, cells[column]) for row, cells in table.rows for column in columns]
     with_comma = [(row, column, cell) for row, column, cell in cells if "," in cell]
     if not with_comma:
-        return False
+        return ""
     row, column, cell = with_comma[0]
-    if any("." in other for _, _, other in cells):
+    plain = next((one for *_, one in with_comma if not _like_thousands(one)), cell if told else "")
+    if any("." in _number(other) for *_, other in cells):
         reason = f'"{cell}" has a comma where other numbers have a point; write all with a point'
-    elif table.separator == ";" or not all(_LIKE_THOUSANDS.fullmatch(other) for *_, other in with_comma):
-        return True
+    elif plain:
+        return plain
     else:
-        reason = f'"{cell}" can be read as {cell.replace(",", ".")} or {cell.replace(",", "")}; write a point'
+        reason = (
+            f'"{cell}" can be read as {cell.replace(",", ".")} or {cell.replace(",", "")}; '
+            "write a point, or say --decimal-comma"
+        )
     raise FileFaultsError((Fault(table.place(row, column), reason),))
+
+
+def _like_thousands(cell: str) -> bool:
+    return _LIKE_THOUSANDS.fullmatch(_number(cell)) is not None
+
+
+def _number(cell: str) -> str:
+    """Return the number a cell starts with, without its unit."""
+    parts = split_number(cell.replace("\N{MINUS SIGN}", "-"))
+    return parts[0] if parts else cell

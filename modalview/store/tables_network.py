@@ -1,7 +1,7 @@
 """A table of nodes and a table of springs make a model: masses joined by springs along their lines."""
 
 import math
-from collections.abc import Mapping
+from collections.abc import Mapping, Sequence
 from dataclasses import dataclass, field
 from pathlib import Path
 
@@ -10,7 +10,7 @@ from modalview.model.parts import FREEDOMS, Body, End, Model, Motion, Spring, Su
 from modalview.model.rules import faults as rules_broken
 from modalview.model.values import Entry, Value
 from modalview.store.reading import MOST_FREEDOMS
-from modalview.store.tables import Table, comma_is_decimal, read_table
+from modalview.store.tables import Table, decimal_comma, read_table
 from modalview.store.tables_columns import Column, Role, cell_entry, find_columns
 from modalview.units import quantities as q
 from modalview.units.quantities import Quantity
@@ -43,7 +43,7 @@ class Imported:
     ----------
     model : Model
     notes : tuple of str
-        Columns that were not read; units that were converted.
+        Columns that were not read; commas that were read as decimal.
     """
 
     model: Model
@@ -51,7 +51,12 @@ class Imported:
 
 
 def import_network(
-    nodes: Path, springs: Path, motion: Motion, units: Mapping[Quantity, str] | None = None
+    nodes: Path,
+    springs: Path,
+    motion: Motion,
+    units: Mapping[Quantity, str] | None = None,
+    *,
+    commas_decimal: bool = False,
 ) -> Imported:
     """Read a table of nodes and a table of springs as a model.
 
@@ -63,6 +68,8 @@ def import_network(
         "single axis", "plane" or "space". Nodes are points: they have no inertia, so nothing turns.
     units : mapping or None
         Units of length, mass and stiffness where a heading names none.
+    commas_decimal : bool
+        True reads "1,200" as 1.2, which is refused otherwise.
 
     Raises
     ------
@@ -75,7 +82,7 @@ def import_network(
         reason = "nodes of a table are points that shift; a shaft train turns. Choose another motion"
         raise FileFaultsError((Fault("motion", reason),))
     known = dict(units or {})
-    reader = _Reader(motion, known)
+    reader = _Reader(motion, known, commas_decimal)
     node_table, spring_table = read_table(nodes), read_table(springs)
     reader.read_nodes(node_table)
     reader.read_springs(spring_table)
@@ -103,6 +110,7 @@ class _Reader:
 
     motion: Motion
     units: Mapping[Quantity, str]
+    commas_decimal: bool
     faults: list[Fault] = field(default_factory=list)
     notes: list[str] = field(default_factory=list)
     bodies: dict[str, Body] = field(default_factory=dict)
@@ -118,9 +126,7 @@ class _Reader:
         try:
             columns, unread = self._columns(table, roles, optional=() if needed else axes)
             _check_number(table, self.motion)
-            comma = comma_is_decimal(
-                table, [columns[r.name].index for r in roles if self._measures(r, columns)]
-            )
+            comma = self._commas(table, [columns[r.name].index for r in roles if self._measures(r, columns)])
         except FileFaultsError as error:
             self.faults += error.faults
             return
@@ -147,7 +153,7 @@ class _Reader:
         """Read springs; what their ends are is known from the nodes."""
         try:
             columns, unread = self._columns(table, SPRING_ROLES)
-            comma = comma_is_decimal(table, [columns["stiffness"].index])
+            comma = self._commas(table, [columns["stiffness"].index])
         except FileFaultsError as error:
             self.faults += error.faults
             return
@@ -184,6 +190,14 @@ class _Reader:
             if len(plain) == len(roles):
                 raise
             return find_columns(table, plain, self.units)
+
+    def _commas(self, table: Table, columns: Sequence[int]) -> bool:
+        """Tell whether commas in these columns are decimal signs, and note it."""
+        cell = decimal_comma(table, columns, told=self.commas_decimal)
+        if cell:
+            read_as = cell.replace(",", ".")
+            self.notes.append(f"Commas in {table.name} are read as decimal: {cell} is {read_as}.")
+        return bool(cell)
 
     def _measures(self, role: Role, columns: Mapping[str, Column]) -> bool:
         return role.quantity is not None and role.name in columns

@@ -36,8 +36,8 @@ def tables(tmp_path):
     return written
 
 
-def imported(paths, motion=Motion.SINGLE_AXIS, units=None):
-    return import_network(*paths, motion, units)
+def imported(paths, motion=Motion.SINGLE_AXIS, units=None, **words):
+    return import_network(*paths, motion, units, **words)
 
 
 def values(model):
@@ -89,9 +89,38 @@ class TestReading:
         assert [entry.text for entry in body.position] == ["2.0255e-09 m", "1e-10 m"]
 
     def test_decimal_commas_between_semicolons(self, tables):
-        model = imported(tables("node;mass_kg\nA;5,125\nB;0,5\n", "a;b;k_N/m\nA;B;1,5e3\n")).model
-        assert values(model) == ([5.125, 0.5], [1500])
-        assert model.bodies[0].mass.text == "5.125 kg"
+        found = imported(tables("node;mass_kg\nA;5,125\nB;0,5\n", "a;b;k_N/m\nA;B;1,5e3\n"))
+        assert values(found.model) == ([5.125, 0.5], [1500])
+        assert found.model.bodies[0].mass.text == "5.125 kg"
+        assert found.notes == (
+            "Commas in nodes.csv are read as decimal: 0,5 is 0.5.",
+            "Commas in springs.csv are read as decimal: 1,5e3 is 1.5e3.",
+        )
+
+    @pytest.mark.parametrize(
+        "nodes", ["node;mass_kg\nA;1,234\nB;2\n", 'node,mass\nA,"\u22121,234 kg"\nB,2 kg\n']
+    )
+    def test_a_comma_with_two_readings_is_refused_unless_told(self, tables, nodes):
+        paths = tables(nodes, "a;b;k_N/m\nA;B;2\n")
+        with pytest.raises(
+            FileFaultsError, match=r"can be read as .?1\.234( kg)? or .?1234( kg)?; write a point"
+        ):
+            imported(paths)
+        if "\u2212" not in nodes:
+            found = imported(paths, commas_decimal=True)
+            assert values(found.model)[0] == [1.234, 2]
+            assert found.notes == ("Commas in nodes.csv are read as decimal: 1,234 is 1.234.",)
+
+    @pytest.mark.parametrize("line", ["sep=;\r\n", '"sep=;"\n', "SEP=;\n", "\ufeffsep=;\n"])
+    def test_a_first_line_that_names_the_separator(self, tables, line):
+        # Rows are counted as a spreadsheet shows them: without that line.
+        paths = tables(f"{line}node;mass, kg\nA;1,5\nB;x\n", "a;b;k_N/m\nA;B;2\n")
+        with pytest.raises(FileFaultsError, match=r'nodes\.csv, row 3, column "mass, kg": "x" is no number'):
+            imported(paths)
+
+    def test_a_named_comma_goes_before_what_the_headings_hold(self, tables):
+        paths = tables("sep=,\nnode,mass_kg,note; old\nA,5,\nB,1,\n", "a,b,k_N/m\nA,B,2\n")
+        assert values(imported(paths).model)[0] == [5, 1]
 
     def test_decimal_commas_in_quotes(self, tables):
         model = imported(tables('node,mass_kg\nA,"5,125"\nB,"0,5"\n', "a,b,k_N/m\nA,B,2\n")).model
