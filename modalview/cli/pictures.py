@@ -3,9 +3,11 @@
 import argparse
 import re
 
+from modalview.cli.printing import progress
+from modalview.cli.texts import frequency_text, range_text
 from modalview.drawing.complexplane import plane_drawing
 from modalview.drawing.complexplanecontent import plane_content
-from modalview.drawing.furniture import title_lines
+from modalview.drawing.furniture import CAPTION, TitleLines, captioned, title_lines
 from modalview.drawing.motion import moved
 from modalview.drawing.palette import DARK, LIGHT
 from modalview.drawing.picture import save_picture
@@ -13,9 +15,9 @@ from modalview.drawing.primitives import Drawing
 from modalview.drawing.scale import scale_drawing
 from modalview.drawing.scalecontent import scale_content
 from modalview.drawing.sheet import sheet_drawing, sheet_geometry
-from modalview.errors import UsageError
+from modalview.errors import KeepclearError, UsageError
 from modalview.model.parts import Model
-from modalview.study import Request, solve
+from modalview.study import FoundMode, Outlook, Request, Solution, look, solve
 from modalview.study.damped import damped
 
 LEAST, MOST = 400, 8000
@@ -54,15 +56,49 @@ def _drawing(model: Model, words: argparse.Namespace, width: int, height: int) -
     if words.mode is not None and words.of != "mode":
         raise UsageError("--mode goes with --of mode")
     if words.of == "sheet":
-        return sheet_drawing(sheet_geometry(model, width, height), title_lines(model))
-    solution = solve(Request(model))
+        return sheet_drawing(sheet_geometry(model, width, height), _title_at_rest(model))
+    solution = solve(Request(model, progress=progress))
     if words.of == "plane":
         damping = damped(Request(model), solution)
         return plane_drawing(plane_content(solution.outlook, solution, damping), width, height)
     if words.of == "scale":
         return scale_drawing(scale_content(solution.outlook, solution), width, height).drawing
-    number = 1 if words.mode is None else words.mode
-    if not 1 <= number <= len(solution.modes):
-        raise UsageError(f"--mode {number}: the model has modes 1 to {len(solution.modes)}")
-    mode = solution.modes[number - 1]
-    return moved(sheet_geometry(model, width, height), mode.motion, 1.0, 0.0, title_lines(model))
+    mode = wanted_mode(solution, words.mode)
+    geometry = sheet_geometry(model, width, height - CAPTION)
+    drawing = moved(geometry, mode.motion, 1.0, 0.0, _title(solution.outlook))
+    return captioned(drawing, mode_caption(mode))
+
+
+def _title(outlook: Outlook) -> TitleLines:
+    checked = str(outlook.verdict or "nothing to check")
+    return title_lines(outlook.request.model, checked=checked, freedoms=outlook.assembly.pencil().n)
+
+
+def _title_at_rest(model: Model) -> TitleLines:
+    """Return the title block of a sheet, which is drawn also where the model cannot be analysed."""
+    try:
+        return _title(look(Request(model, progress=progress)))
+    except KeepclearError:
+        return title_lines(model)
+
+
+def wanted_mode(solution: Solution, number: int | None) -> FoundMode:
+    """Return the mode of that number, or the first; of a large model some are found, not all."""
+    modes = solution.modes
+    found = next((mode for mode in modes if number in (None, mode.number)), None)
+    if found is None:
+        numbers = [mode.number for mode in modes]
+        runs = len(numbers) == numbers[-1] - numbers[0] + 1 if numbers else True
+        there = f"{numbers[0]} to {numbers[-1]}" if runs and numbers else ", ".join(map(str, numbers))
+        what = (
+            "has modes" if numbers[:1] == [1] and runs else "is large; found are the modes near excitations,"
+        )
+        raise UsageError(f"--mode {number}: the model {what} {there}")
+    return found
+
+
+def mode_caption(mode: FoundMode) -> str:
+    """Return "Mode 2 · 140.99 Hz (131.7 to 150.2 Hz over tolerance) · pump against motor"."""
+    low, high = mode.range_hz
+    toleranced = f" ({range_text(mode)} over tolerance)" if high > low else ""
+    return f"Mode {mode.number} · {frequency_text(mode)}{toleranced} · {mode.name}"

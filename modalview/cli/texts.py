@@ -60,7 +60,7 @@ def _separated(groups: Sequence[Group]) -> str:
 def modes_text(solution: Solution | MatrixSolution, more: str = "") -> str:
     """Return the modes as a table, with the evidence and what more there is to tell."""
     head = ["mode", "frequency", "over tolerance", "name"]
-    rows = [[str(mode.number), _frequency(mode), _range(mode), mode.name] for mode in solution.modes]
+    rows = [[str(mode.number), frequency_text(mode), range_text(mode), mode.name] for mode in solution.modes]
     parts = [_title(solution.outlook), table([head, *rows], right=frozenset({0, 1}))]
     parts += [
         f"{head}\n" + "\n".join(_listed(f"{number:>4}  ", shares) for number, shares in found)
@@ -165,14 +165,16 @@ def _count(number: int | None) -> str:
     return "undecided" if number is None else str(number)
 
 
-def _frequency(mode: FoundMode) -> str:
+def frequency_text(mode: FoundMode) -> str:
+    """Return a mode's frequency to the digits that its numerical error leaves."""
     if mode.kind == "rigid-body":
         return "0 Hz"
     digits = shown_digits(mode.frequency_hz, mode.numerical_error_hz)
     return f"{significant(mode.frequency_hz, digits)} Hz"
 
 
-def _range(mode: FoundMode) -> str:
+def range_text(mode: FoundMode) -> str:
+    """Return its range over all tolerances: "44.12 to 57.78 Hz"."""
     low, high = mode.range_hz
     if mode.kind == "rigid-body":
         return ""

@@ -13,6 +13,7 @@ from modalview.model.parts import FREEDOMS, Model, Motion
 
 GRID_STEP = 24.0
 MARGIN = 12.0
+CAPTION = 28.0  # height of the strip below a picture that says what it shows
 TWO_LINES = 0.6  # of the block: a title wider than this at the smaller size stands in two lines
 SECOND = 15.0  # height of the second line
 TITLE_SHARE = (0.45, 0.68)  # of the block, for the left column: least and most
@@ -133,6 +134,15 @@ def axes(motion: Motion, text_scale: float) -> tuple[tuple[Item, ...], Floats]:
     if motion is Motion.SHAFT_TRAIN:
         high[0] += text_width("rotation about the shafts", Size.SMALL, text_scale=text_scale)
     return tuple(items), np.array([[0.0, 0.0, *high]])
+
+
+def captioned(drawing: Drawing, caption: str) -> Drawing:
+    """Return a drawing with a line of text in a strip of ``CAPTION`` pixels below it."""
+    left, top, width, height = drawing.bounds
+    strip, room = CAPTION * drawing.text_scale, width - 2 * MARGIN
+    line = shortened(caption, room, Size.NORMAL, drawing.text_scale)
+    text = Text(left + MARGIN, top + height + strip / 2, line, Role.INK, Size.NORMAL)
+    return Drawing((*drawing.items, text), (left, top, width, height + strip), drawing.text_scale)
 
 
 def sheet_of(items: tuple[Item, ...], width: float, height: float, text_scale: float) -> Drawing:

@@ -130,7 +130,7 @@ def decimal_comma(table: Table, columns: Sequence[int], *, told: bool = False) -
     Raises
     ------
     FileFaultsError
-        Every number with a comma can be read both ways: "1,200" alone is 1.2 or 1200, also between semicolons.
+        Every number with a comma has two readings: "1,200" is 1.2 or 1200, also between semicolons.
     """
     cells = [(row, column, cells[column]) for row, cells in table.rows for column in columns]
     with_comma = [(row, column, cell) for row, column, cell in cells if "," in cell]
