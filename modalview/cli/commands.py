@@ -7,7 +7,17 @@ from pathlib import Path
 
 from modalview.cli import documents, imports, matrices, near, texts
 from modalview.cli.damped import damped_document, damped_text
-from modalview.cli.printing import OK, UNUSABLE, failure_text, progress, say, say_json, shown, verdict_code
+from modalview.cli.printing import (
+    OK,
+    UNUSABLE,
+    failure_text,
+    one_line,
+    progress,
+    say,
+    say_json,
+    shown,
+    verdict_code,
+)
 from modalview.errors import KeepclearError, UsageError
 from modalview.model.parts import Model
 from modalview.store import read_model
@@ -122,7 +132,7 @@ def run_picture(words: argparse.Namespace) -> int:
 
     _, model = _file(words)
     write_picture(model, words)
-    say(f"{words.output} written")
+    say(f"{one_line(str(words.output))} written")
     return OK
 
 

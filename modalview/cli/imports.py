@@ -3,7 +3,7 @@
 import argparse
 from pathlib import Path
 
-from modalview.cli.printing import OK, say
+from modalview.cli.printing import OK, one_line, say
 from modalview.errors import FileAccessError, UsageError
 from modalview.model.parts import Motion
 from modalview.store import save_model
@@ -51,7 +51,7 @@ def run_import(words: argparse.Namespace) -> int:
         f"{len(model.supports)} on the ground",
         _counted(len(model.links), "spring", "springs"),
     ]
-    say(f"{target} written: {', '.join(parts)}, {model.motion}")
+    say(f"{one_line(str(target))} written: {', '.join(parts)}, {model.motion}")
     for note in found.notes:
         say(note)
     say("It has no machine yet: add its speed, orders and the margin wanted before a check.")

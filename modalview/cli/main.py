@@ -13,7 +13,7 @@ from typing import NoReturn, TextIO
 from modalview import __version__
 from modalview.cli.cautions import CAUTION
 from modalview.cli.commands import COMMANDS
-from modalview.cli.printing import UNUSABLE, failure_text, shown
+from modalview.cli.printing import UNUSABLE, failure_text, one_line, shown
 from modalview.errors import FaultsError, KeepclearError
 
 _DESCRIPTION = (
@@ -96,7 +96,7 @@ class _Parser(argparse.ArgumentParser):
     """Exits with 2 and one line, as every other unusable input."""
 
     def error(self, message: str) -> NoReturn:
-        self.exit(UNUSABLE, f"keepclear: {message}; see {self.prog} --help\n")
+        self.exit(UNUSABLE, f"keepclear: {shown(one_line(message))}; see {self.prog} --help\n")
 
 
 def _parser() -> argparse.ArgumentParser:

@@ -13,6 +13,8 @@ OK, NOT_CLEAR, UNUSABLE = 0, 1, 2
 # What a terminal obeys instead of showing it: control characters, and marks that turn the reading direction.
 _OBEYED = re.compile("[\x00-\x08\x0b-\x1f\x7f-\x9f\u200e\u200f\u202a-\u202e\u2066-\u2069]")
 
+_BREAKS = frozenset("\t\n\r\u2028\u2029")
+
 
 def verdict_code(verdict: Verdict | None) -> int:
     """Return the exit code of a check."""
@@ -30,10 +32,15 @@ def failure_text(error: KeepclearError, path: Path | None) -> str:
     """Return a failure with the file it belongs to, each fault on a line of its own."""
     if isinstance(error, FaultsError):
         noun = "fault" if len(error.faults) == 1 else "faults"
-        told = f"{len(error.faults)} {noun}:\n" + "\n".join(f"  {fault}" for fault in error.faults)
+        told = f"{len(error.faults)} {noun}:\n" + "\n".join(f"  {one_line(str(one))}" for one in error.faults)
     else:
         told = str(error)
-    return told if path is None or isinstance(error, FileAccessError) else f"{path}: {told}"
+    return told if path is None or isinstance(error, FileAccessError) else f"{one_line(str(path))}: {told}"
+
+
+def one_line(text: str) -> str:
+    r"""Return text with its line breaks and tabs written out, such as ``\u000a``."""
+    return "".join(f"\\u{ord(sign):04x}" if sign in _BREAKS else sign for sign in text)
 
 
 def say(text: str) -> None:

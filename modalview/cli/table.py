@@ -5,7 +5,6 @@ from collections.abc import Sequence
 
 def table(rows: Sequence[Sequence[str]], *, right: frozenset[int] = frozenset()) -> str:
     """Return rows as aligned columns, two spaces apart; columns in ``right`` are set flush right."""
-    rows = [[" ".join(cell.splitlines()) for cell in row] for row in rows]  # a name may hold line breaks
     widths = [max(len(row[i]) for row in rows) for i in range(len(rows[0]))] if rows else []
     lines = []
     for row in rows:

@@ -8,6 +8,7 @@ from textwrap import fill
 from modalview.bounds.before import to_hz
 from modalview.bounds.discs import Group
 from modalview.cli.cautions import CAUTION
+from modalview.cli.printing import one_line
 from modalview.cli.table import table
 from modalview.resonance.results import Check, Drive
 from modalview.resonance.wording import band_text, hz_range, percent
@@ -81,7 +82,7 @@ def check_text(path: Path, solution: Solution | MatrixSolution) -> str:
     """Return the verdicts, what decides them, and what was not checked."""
     outlook = solution.outlook
     verdict = outlook.verdict.value if outlook.verdict else "nothing to check"
-    parts = [f"{path}: {verdict.upper()}", _wrapped(solution.sentence)]
+    parts = [f"{one_line(str(path))}: {verdict.upper()}", _wrapped(solution.sentence)]
     if solution.checks:
         head = ["check", "excitation", "verdict", "nearest mode", "separation", "worst"]
         rows = [_check_row(check, solution.modes, _no_nearest(solution)) for check in solution.checks]

@@ -10,7 +10,8 @@ from typing import Any
 from modalview.errors import Fault
 from modalview.model import rules_bodies, rules_links, rules_machines, rules_records
 from modalview.model.parts import Model
-from modalview.model.rules_context import Context, Findings, place_of
+from modalview.model.rules_context import Context, Findings, cut, place_of
+from modalview.model.rules_names import plain_id, plain_name
 
 _RULES: dict[str, Callable[[Any, Context], Findings]] = {
     "bodies": rules_bodies.body,
@@ -36,28 +37,30 @@ def faults(model: Model) -> tuple[Fault, ...]:
 
 
 def _faults(model: Model) -> Iterator[Fault]:
-    yield from _ids(model)
+    yield from _names(model)
     context = Context.of(model)
     for group, rule in _RULES.items():
         for number, part in enumerate(getattr(model, group)):
-            for key, reason in rule(part, context):
-                yield Fault(f"{place_of(group, number, part.id)} . {key}", reason)
+            yield from _at(group, number, part.id, rule(part, context))
     for number, case in enumerate(model.load_cases):
-        for key, reason in rules_records.load_case(case, model):
-            yield Fault(f"{place_of('load_cases', number, case.id)} . {key}", reason)
+        yield from _at("load_cases", number, case.id, rules_records.load_case(case, model))
     yield from rules_records.whole(model)
 
 
-def _ids(model: Model) -> Iterator[Fault]:
+def _at(group: str, number: int, name: str, findings: Findings) -> Iterator[Fault]:
+    for key, reason in findings:
+        yield Fault(f"{place_of(group, number, name)} . {key}", reason)
+
+
+def _names(model: Model) -> Iterator[Fault]:
     first: dict[str, str] = {}
     for group in (*_RULES, "load_cases"):
         for number, part in enumerate(getattr(model, group)):
             name = part.id
             if name in first:
-                reason = f'"{name}" is already the id of {first[name]}; ids are unique over the file'
+                reason = f'"{cut(name)}" is already the id of {first[name]}; ids are unique over the file'
                 yield Fault(f"{place_of(group, number, name)} . id", reason)
-            elif not name.strip() or not name.isprintable():
-                yield Fault(
-                    f"{place_of(group, number, name)} . id", "must be plain text on one line, not empty"
-                )
+            else:
+                yield from _at(group, number, name, plain_id("id", name))
+            yield from _at(group, number, name, plain_name("name", getattr(part, "name", None)))
             first.setdefault(name, f"{group}[{number}]")

@@ -17,9 +17,14 @@ Findings = Iterator[Finding]
 COINCIDENT = 1e-9
 
 
-def cut(name: str) -> str:
-    """Return a name short enough for a message."""
-    return name if len(name) <= LONGEST_NAME else f"{name[:LONGEST_NAME]}..."
+def cut(name: str, longest: int = LONGEST_NAME) -> str:
+    r"""Return a name fit for a message: short, and on one line.
+
+    >>> print(cut("pump\nset"))
+    pump\u000aset
+    """
+    short = name if len(name) <= longest else f"{name[:longest]}..."
+    return "".join(sign if sign.isprintable() else f"\\u{ord(sign):04x}" for sign in short)
 
 
 def place_of(group: str, number: int, name: str) -> str:

@@ -4,6 +4,7 @@ import math
 
 from modalview.model.parts import Excitation, Machine, Magnitude, Margin, Motion, SpeedRange
 from modalview.model.rules_context import Context, Findings, place_of
+from modalview.model.rules_names import plain_id, plain_name
 from modalview.model.rules_values import above_zero, direction, end, not_negative, share, space_axis
 from modalview.model.values import Entry, is_sane
 
@@ -77,8 +78,8 @@ def _margins_given(given: Machine) -> Findings:
 
 
 def _excitation(given: Excitation, owner: Machine, context: Context) -> Findings:
-    if not given.id.strip():
-        yield "id", "must not be empty"
+    yield from plain_id("id", given.id)
+    yield from plain_name("name", given.name)
     yield from _order(given, owner, context)
     yield from above_zero("frequency", given.frequency)
     yield from _margin("margin", given.margin)

@@ -5,8 +5,10 @@ from collections.abc import Iterator
 
 from modalview.errors import Fault, UnitError
 from modalview.model.addresses import Address, look, quantity_of
-from modalview.model.parts import Limit, LoadCase, LoadChange, MeasuredPeak, Model
+from modalview.model.fields import fields_of
+from modalview.model.parts import Limit, LoadCase, LoadChange, MeasuredPeak, Model, TitleBlock
 from modalview.model.rules_context import Context, Findings
+from modalview.model.rules_names import plain_name
 from modalview.model.rules_values import above_zero, direction, end, not_negative, share, tolerance
 from modalview.model.values import Value, is_sane
 from modalview.units.parse import read
@@ -37,6 +39,11 @@ def whole(model: Model) -> Iterator[Fault]:
     if default is not None:
         yield from _at("default_tolerance", tolerance("stiffness", default.stiffness, None))
         yield from _at("default_tolerance", tolerance("mass", default.mass, None))
+    for key, reason in plain_name("title", model.title):
+        yield Fault(key, reason)
+    block = model.title_block
+    for field in fields_of(TitleBlock) if block is not None else ():
+        yield from _at("title_block", plain_name(field.key, getattr(block, field.name)))
     if model.units not in (None, *UNITS):
         yield Fault("units", f'is one of {", ".join(UNITS)}; found "{model.units}"')
 

@@ -25,7 +25,7 @@ _LIKE_THOUSANDS = re.compile(r"[+-]?[1-9][0-9]{0,2},[0-9]{3}", re.ASCII)
 
 @dataclass(frozen=True, slots=True)
 class Table:
-    """A table as read: every cell is text without blanks around it.
+    """A table as read: every cell is text on one line, without blanks around it.
 
     Parameters
     ----------
@@ -67,7 +67,7 @@ def read_table(path: Path) -> Table:
     except csv.Error as error:
         raise FileFaultsError((Fault(name, f"is no table that can be read: {error}"),)) from None
     lines = [
-        (number, tuple(cell.strip() for cell in cells))
+        (number, tuple(" ".join(cell.split()) for cell in cells))  # a cell may hold line breaks
         for number, cells in enumerate(found, 1)
         if any(cell.strip() for cell in cells) and not cells[0].lstrip().startswith("#")
     ]

@@ -34,7 +34,7 @@ def shown(node: Any) -> str:
     if isinstance(node, NotFinite):
         return f"{node.word}, which is not a number"
     if isinstance(node, str):
-        return f'the text "{node}"' if len(node) <= LONGEST_SHOWN else f'the text "{node[:LONGEST_SHOWN]}..."'
+        return f'the text "{cut(node, LONGEST_SHOWN)}"'
     if isinstance(node, dict | list):
         return "an object {...}" if isinstance(node, dict) else "a list [...]"
     if node is None or isinstance(node, bool):

@@ -141,6 +141,8 @@ def _exact(text: str, quantity: Quantity, *, window: bool) -> _Exact:
         raise UnitError("it is empty; a number and a unit are wanted")
     if len(text) > LONGEST_TEXT:
         raise UnitError(f"it is {len(text)} characters long; at most {LONGEST_TEXT} are read")
+    if any(not sign.isprintable() and not sign.isspace() for sign in plain) or len(text.splitlines()) > 1:
+        raise UnitError("it holds a line break or an invisible character; write it plainly, on one line")
     return _special(plain, quantity, window=window) or _plain(plain, quantity, window=window)
 
 

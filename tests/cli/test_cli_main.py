@@ -232,20 +232,38 @@ class TestUnusableInput:
             f"keepclear: {bad}: 1 fault:",
         ]
 
-    def test_names_cannot_steer_the_terminal(self, capsys, file):
-        bodies = [{"id": "a", "name": "motor\x1b[2J\nCLEAR\u202e", "mass": "10 kg"}]
-        code, out, _ = run(capsys, "modes", file(bodies=bodies))
-        assert code == 0
-        assert "motor\\u001b[2J CLEAR\\u202e" in out
-        assert not {"\x1b", "\u202e"} & set(out)
-        assert "\nCLEAR" not in out
-        _, _, err = run(capsys, "modes", file(bodies=[{"id": "a\x1b[2J", "mass": "10 kg"}]))
-        assert "\x1b" not in err
+    @pytest.mark.parametrize("key", ["name", "id"])
+    def test_names_cannot_steer_the_terminal(self, capsys, file, key):
+        bodies = [{"id": "a", "mass": "10 kg"} | {key: "motor\x1b[2J\nCLEAR\u202e"}]
+        code, out, err = run(capsys, "modes", file(bodies=bodies))
+        assert (code, out) == (2, "")
+        assert "holds an escape sign (U+001B) as character 6" in err
+        assert not {"\x1b", "\u202e"} & set(err)
+        assert "\nCLEAR" not in err
+
+    def test_every_fault_stands_on_one_line(self, capsys, file):
+        links = [{"id": "k", "kind": "spring", "from": {"body": "a\nb"}, "to": {"support": "g\u2028"}}]
+        _, _, err = run(capsys, "modes", file(links=links))
+        assert all(line.startswith(("keepclear: ", "  links[")) for line in err.split("\n")[:-1])
+
+    def test_a_path_stands_on_one_line(self, capsys, file):
+        path = file(name="a\n\x1bb.keepclear")
+        code, out, _ = run(capsys, "check", path)
+        assert code in (0, 2)
+        assert out.startswith(f"{path.parent}/a\\u000a\\u001bb.keepclear: ")
+
+    def test_words_of_the_command_line_cannot_steer_it_either(self, capsys):
+        with pytest.raises(SystemExit):
+            main(["modes", "x", "--\x1b[2J\n"])
+        err = capsys.readouterr().err
+        assert "\\u001b[2J\\u000a" in err
+        assert err.count("\n") == 1
 
     def test_names_in_json_are_what_the_file_says(self, capsys, file):
-        bodies = [{"id": "a", "name": "motor\x9b\u202e", "mass": "10 kg"}]
+        bodies = [{"id": "a", "name": "motor \U0001f469\u200d\U0001f527", "mass": "10 kg"}]
         _, out, _ = run(capsys, "modes", file(bodies=bodies), "--json")
-        assert json.loads(out)["modes"][0]["kinetic_energy"][0]["name"] == "motor\x9b\u202e"
+        found = json.loads(out)["modes"][0]["kinetic_energy"][0]["name"]
+        assert found == "motor \U0001f469\u200d\U0001f527"
 
     @pytest.mark.parametrize("name", ["stdout", "stderr"])
     def test_a_closed_stream_leaves_the_exit_code(self, capsys, monkeypatch, file, name):
