@@ -7,6 +7,9 @@ from modalview.errors import UnitError
 
 # Plain digits only: no powers, no underscores, no hexadecimal, no digits of other scripts.
 _NUMBER = re.compile(r"([+-]?)((?:[0-9]|[.,][0-9])[0-9.,]*)([eE][+-]?[0-9]+)?")
+# "4*180 kg", "4 x 180 kg", "4 × 180 kg": what is counted must start with a number, or be a grade or GD2.
+_PRODUCT = re.compile(r"([+-]?[0-9.,]*[0-9][0-9.,]*)\s*[*x×](?!\*)\s*(.+)")
+_POWER_OF_TEN = re.compile(r"10\s*(\^|\*\*|[⁰¹²³⁴⁵⁶⁷⁸⁹⁻])")
 # One comma between groups of three is how thousands are written: "1,200" has two readings.
 _LIKE_THOUSANDS = re.compile(r"[1-9][0-9]{0,2},[0-9]{3}")
 
@@ -19,6 +22,20 @@ def split_number(text: str) -> tuple[str, str] | None:
     """
     match = _NUMBER.match(text)
     return (match.group(), text[match.end() :]) if match else None
+
+
+def split_product(text: str) -> tuple[str, str] | None:
+    """Cut "4*180 kg" into the count and the one value it multiplies; None when ``text`` is no product.
+
+    A power of ten is none: "1.2*10^6 N/m" is left to be refused with the way to write it.
+
+    >>> split_product("4*180 kg"), split_product("2.5 × 46 kg m2"), split_product("46 kg*m2")
+    (('4', '180 kg'), ('2.5', '46 kg m2'), None)
+    """
+    match = _PRODUCT.fullmatch(text)
+    if match is None or _POWER_OF_TEN.match(match[2]):
+        return None
+    return match[1], match[2]
 
 
 def read_number(written: str, *, window: bool) -> tuple[Fraction, str]:

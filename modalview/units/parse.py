@@ -1,7 +1,8 @@
 """Reading a typed value: a number and a unit of the fixed table, or one of the trade's own notations.
 
 File and window use the same rules but for the comma: every comma is refused in a file, and the window takes
-"4,2" for 4.2. Nothing is computed: no products, no powers, no expressions.
+"4,2" for 4.2. A count may stand before one value, "4*180 kg", and a load under its deflection, "35 mm under
+4*225 kg". Nothing else is computed: no sums, no powers, no longer products, no brackets.
 """
 
 import re
@@ -11,7 +12,7 @@ from functools import lru_cache
 
 from modalview.errors import UnitError
 from modalview.units import quantities as q
-from modalview.units.numbers import read_number, split_number
+from modalview.units.numbers import read_number, split_number, split_product
 from modalview.units.quantities import Quantity
 from modalview.units.refusals import no_number, refusal, wrong_unit
 from modalview.units.spelling import unit_key
@@ -131,7 +132,9 @@ def unit_of(text: str) -> str:
     >>> unit_of("4.2 kN/mm"), unit_of("1480rpm"), unit_of("G 6.3")
     ('kN/mm', 'rpm', '')
     """
-    parts = split_number(text.replace("\u2212", "-").strip())
+    plain = text.replace("\u2212", "-").strip()
+    product = split_product(plain)
+    parts = split_number(product[1] if product else plain)
     return parts[1].strip() if parts else ""
 
 
@@ -143,7 +146,29 @@ def _exact(text: str, quantity: Quantity, *, window: bool) -> _Exact:
         raise UnitError(f"it is {len(text)} characters long; at most {LONGEST_TEXT} are read")
     if any(not sign.isprintable() and not sign.isspace() for sign in plain) or len(text.splitlines()) > 1:
         raise UnitError("it holds a line break or an invisible character; write it plainly, on one line")
-    return _special(plain, quantity, window=window) or _plain(plain, quantity, window=window)
+    return _counted(plain, quantity, window=window) or _single(plain, quantity, window=window)
+
+
+def _counted(text: str, quantity: Quantity, *, window: bool) -> _Exact | None:
+    """Read a count times one value; None when the text is no such product."""
+    parts = split_product(text)
+    if parts is None:
+        return None
+    count_text, value_text = parts
+    if quantity == q.STIFFNESS and (match := _UNDER.fullmatch(value_text)):
+        told = f"{match['deflection'].strip()} under {count_text}*{match['load'].strip()}"
+        raise UnitError(
+            f'a count before a deflection has two readings; equal springs side by side are "{told}"'
+        )
+    count, note = read_number(count_text, window=window)
+    if count <= 0:
+        raise UnitError(f"the count {count_text} must be above zero")
+    value = _single(value_text, quantity, window=window)
+    return _Exact(count * value.amount, ((note,) if note else ()) + value.notes)
+
+
+def _single(text: str, quantity: Quantity, *, window: bool) -> _Exact:
+    return _special(text, quantity, window=window) or _plain(text, quantity, window=window)
 
 
 def _plain(text: str, quantity: Quantity, *, window: bool) -> _Exact:
@@ -189,16 +214,19 @@ def _flywheel(kind: str, value: str, *, window: bool) -> _Exact:
 def _deflection(deflection: str, load: str, *, window: bool) -> _Exact:
     """Stiffness = load / static deflection, the load a force or the weight of a mass at 9.80665 m/s2."""
     sag = _plain(deflection, q.LENGTH, window=window)
-    parts = split_number(load)
-    if parts and find_unit(parts[1], q.FORCE):
-        weight = _plain(load, q.FORCE, window=window)
+    if find_unit(unit_of(load), q.FORCE):
+        weight = _load(load, q.FORCE, window=window)
     else:
-        mass = _plain(load, q.MASS, window=window)
+        mass = _load(load, q.MASS, window=window)
         weight = _Exact(mass.amount * STANDARD_GRAVITY, mass.notes)
     if sag.amount <= 0 or weight.amount <= 0:
         raise UnitError("deflection and load must both be above zero")
     told = "stiffness from static deflection holds only when dynamic and static stiffness are equal"
     return _Exact(weight.amount / sag.amount, (*sag.notes, *weight.notes, told))
+
+
+def _load(text: str, quantity: Quantity, *, window: bool) -> _Exact:
+    return _counted(text, quantity, window=window) or _plain(text, quantity, window=window)
 
 
 def _rounded(amount: Fraction) -> float:

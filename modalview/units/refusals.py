@@ -9,7 +9,9 @@ from modalview.units.table import UNITS, accepted_spellings
 
 _TIMES_TEN = re.compile(r"\s*[*x×·]?\s*10\s*(\^|\*\*|[⁰¹²³⁴⁵⁶⁷⁸⁹⁻])")
 _ARITHMETIC = re.compile(r"\s*[*x×·^/+-]+\s*[0-9(]")
+_LATER_ARITHMETIC = re.compile(r"[^*]*(?:(?<!\*)[*×+]\s*[0-9(]|\sx\s*[0-9(])|\s*[*×]\s*$")
 _GROUPED = re.compile(r"\s+[0-9]")
+_ONE_COUNT = 'only a count times one value is computed, as in "4*180 kg"; write anything else as its result'
 _LONGEST_SHOWN = 60
 _ONLY_GD2 = frozenset(unit_key(unit) for unit in ("kgf m2", "kgf cm2", "kgf mm2"))
 
@@ -38,7 +40,7 @@ def no_number(text: str, quantity: Quantity) -> str:
     """Say why a text that does not start with a number is refused."""
     if quantity == q.BALANCE_GRADE and text[:1] == "g":
         return "a balance quality grade is written with a capital G"
-    return "it does not start with a plain number"
+    return _ONE_COUNT if "(" in text else "it does not start with a plain number"
 
 
 def wrong_unit(number: str, unit_text: str, quantity: Quantity) -> str:
@@ -60,8 +62,8 @@ def wrong_unit(number: str, unit_text: str, quantity: Quantity) -> str:
 def _computed(number: str, unit_text: str) -> str:
     if _TIMES_TEN.match(unit_text):
         return f"powers are not computed; write {_cut(number)}e6 for {_cut(number)} million"
-    if _ARITHMETIC.match(unit_text):
-        return "nothing is computed in a value; write the result as one plain number"
+    if _ARITHMETIC.match(unit_text) or _LATER_ARITHMETIC.match(unit_text):
+        return _ONE_COUNT
     if _GROUPED.match(unit_text):
         return "a number is written without gaps between its digits"
     return ""

@@ -112,3 +112,12 @@ def test_a_handbook_entry_keeps_any_json():
 
 def test_models_are_hashable_whatever_they_hold():
     assert len({read_model(path) for path in SAMPLES}) == len(SAMPLES)
+
+
+def test_products_and_deflections_are_kept_as_typed_and_read_as_numbers():
+    text = SAMPLES[0].read_text(encoding="utf-8").replace('"5.2e7 N/m"', '"35 mm under 4 x 225 kg"')
+    model = parse_model(text)
+    stiffnesses = [one.stiffness for one in model.links if isinstance(one, parts.Spring)]
+    (typed,) = [one for one in stiffnesses if one.text == "35 mm under 4 x 225 kg"]
+    assert typed.si == pytest.approx(900 * 9.80665 / 0.035, rel=1e-15)
+    assert '"35 mm under 4 x 225 kg"' in dump_model(model)
