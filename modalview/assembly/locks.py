@@ -8,6 +8,7 @@ from modalview.assembly.kinematics import ROTATIONS, Vector, cross, places
 from modalview.assembly.stretch import exact_ratio, rotation_axis
 from modalview.errors import Fault, ModelFaultsError
 from modalview.model.parts import Gear, Link, Model, Motion, RigidLink, Shaft
+from modalview.units.show import short
 
 
 def speed_ratios(model: Model) -> dict[str, tuple[str, Fraction]]:
@@ -127,6 +128,6 @@ def _cannot_turn(body: str, one: Fraction, other: Fraction, gears: Iterable[str]
     names = ", ".join(gears)
     reason = (
         f"the gear loop through {body} cannot turn: two ways round give speeds in the ratio "
-        f"{float(one):g} and {float(other):g}; check the teeth or ratios of {names}"
+        f"{short(float(one))} and {short(float(other))}; check the teeth or ratios of {names}"
     )
     return ModelFaultsError((Fault(f"gear {names}", reason),))

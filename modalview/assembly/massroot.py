@@ -7,6 +7,7 @@ import scipy.sparse as sp
 from scipy.sparse.csgraph import connected_components
 
 from modalview.errors import NumericalError
+from modalview.units.show import short
 
 
 def mass_root_inverse(mass: sp.csc_array, massy: npt.NDArray[np.bool_]) -> sp.csc_array:
@@ -67,7 +68,7 @@ def _diagonal_root_inverse(diagonal: npt.NDArray[np.float64]) -> sp.csc_array:
 def _require_positive(diagonal: npt.NDArray[np.float64], where: npt.NDArray[np.bool_]) -> None:
     if np.any(diagonal[where] <= 0):
         bad = int(np.flatnonzero(where & (diagonal <= 0))[0])
-        raise NumericalError(f"Mass {diagonal[bad]:g} of coordinate {bad} is not positive.")
+        raise NumericalError(f"Mass {short(diagonal[bad])} of coordinate {bad} is not positive.")
 
 
 def _root_inverse(block: npt.NDArray[np.float64]) -> npt.NDArray[np.float64]:
@@ -75,7 +76,7 @@ def _root_inverse(block: npt.NDArray[np.float64]) -> npt.NDArray[np.float64]:
         lower = np.linalg.cholesky(block)
     except np.linalg.LinAlgError:
         least = float(np.linalg.eigvalsh(block)[0])
-        message = f"The mass matrix is not positive definite: it has an eigenvalue {least:.3g}."
+        message = f"The mass matrix is not positive definite: it has an eigenvalue {short(least, 3)}."
         raise NumericalError(message) from None
     inverse: npt.NDArray[np.float64] = la.solve_triangular(lower.T, np.eye(len(block)), lower=False)
     return inverse

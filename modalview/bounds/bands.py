@@ -8,6 +8,7 @@ import numpy as np
 
 from modalview.factor.counts import Count, count_at_most, count_below
 from modalview.factor.shifted import ShiftedPencil
+from modalview.units.show import short
 
 # An edge of a band: rad/s, or turns per second as a fraction where counts are exact.
 Edge = float | Fraction
@@ -138,7 +139,7 @@ class BandCount:
     def undecided(self) -> tuple[str, ...]:
         """The counts that rounding left open, in words."""
         return tuple(
-            f"{edge.case}, {edge.side} {float(edge.edge):.6g} rad/s"
+            f"{edge.case}, {edge.side} {short(float(edge.edge))} rad/s"
             for edge in self.evidence
             if edge.count.number is None
         )

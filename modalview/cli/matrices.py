@@ -3,7 +3,7 @@
 import argparse
 import re
 from collections.abc import Callable, Sequence
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 from pathlib import Path
 from typing import Any
 
@@ -21,12 +21,17 @@ from modalview.study.completed import RAD_PER_HZ
 from modalview.study.matrices import require_modes, solve_matrices_near
 from modalview.units import quantities as q
 from modalview.units.quantities import Quantity
+from modalview.units.show import short
 
 Run = Callable[[argparse.Namespace], int]
 
 MACHINE = "machine"
 # Modes near a frequency, where their number is not given.
 NEAR = 6
+_NOTHING = (
+    "Nothing to check: name what is to be kept clear by --orders with --speed (or --speed-from and "
+    "--speed-to), or by --frequencies, and the distance wanted by --margin."
+)
 _PLAIN = re.compile(r"[+-]?(\d{1,9}\.?\d{0,9}|\.\d{1,9})", re.ASCII)
 
 
@@ -142,6 +147,8 @@ def _run_near(words: argparse.Namespace) -> int:
 def run_check(words: argparse.Namespace) -> int:
     """Print the verdicts on matrices."""
     path, solution = words.stiffness, solve_matrices(request_of(words))
+    if not solution.checks:
+        solution = replace(solution, sentence=_NOTHING)
     _print(words, lambda: documents.check_document(path, solution), lambda: texts.check_text(path, solution))
     return verdict_code(solution.outlook.verdict)
 
@@ -177,6 +184,7 @@ def _machines(words: argparse.Namespace) -> tuple[Machine, ...]:
         if idle:
             raise UsageError(f"--{idle[0]} needs --orders or --frequencies: what is to be kept clear")
         return ()
+    _check_given(words, speed)
     machine = Machine(
         id=MACHINE,
         speed=speed,
@@ -188,6 +196,16 @@ def _machines(words: argparse.Namespace) -> tuple[Machine, ...]:
     if broken:
         raise UsageError("; ".join(f"{_option(fault.path)} {fault.reason}" for fault in broken))
     return (machine,)
+
+
+def _check_given(words: argparse.Namespace, speed: Entry | SpeedRange | None) -> None:
+    """Name the option that is missing, where the rules would speak of the file."""
+    if words.orders is not None and speed is None:
+        raise UsageError("--orders are multiples of a speed: give --speed, or --speed-from and --speed-to")
+    if words.margin is None:
+        raise UsageError(
+            '--margin is missing: the distance wanted, such as --margin "15 %"; it has no default'
+        )
 
 
 def _option(path: str) -> str:
@@ -214,7 +232,7 @@ def _orders(words: argparse.Namespace) -> list[Excitation]:
         if not _PLAIN.fullmatch(text):
             raise UsageError(f"--orders wants numbers, such as 1,2,7; found {text!r}")
         order = float(text)
-        found.append(Excitation(id=f"{order:g}x", order=order))
+        found.append(Excitation(id=f"{short(order, 12)}x", order=order))
     return found
 
 

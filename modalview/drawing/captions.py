@@ -18,6 +18,7 @@ from modalview.model.parts import (
     Spring,
 )
 from modalview.model.values import Tolerance, Value
+from modalview.units.show import short
 
 
 def tolerance_text(tolerance: Tolerance | None) -> str:
@@ -129,7 +130,7 @@ def in_two(text: str, room: float, text_scale: float = 1.0) -> tuple[str, ...]:
 
 
 def _order(excitation: Excitation) -> str:
-    return f"{excitation.order:g}×"
+    return f"{short(excitation.order)}×"
 
 
 def _mount_lines(mount: Mount, default: Tolerance | None) -> list[str]:

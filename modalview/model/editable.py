@@ -10,6 +10,7 @@ from modalview.model.parts import Model, Motion
 from modalview.model.tolerance_text import tolerance_text
 from modalview.model.values import Entry, Value
 from modalview.units.quantities import Quantity
+from modalview.units.show import short
 
 _POINT = ("x", "y", "z")
 # Fields that name another part: drawn on the sheet, not typed in a table.
@@ -101,7 +102,7 @@ def _field(item: Any, shape: Shape, quantity: Quantity | None, spot: _Spot) -> I
     elif shape.tolerance:
         yield EditableField(spot.address, spot.name, tolerance_text(item))
     elif isinstance(item, str | int | float) and (shape.text or shape.number):
-        yield EditableField(spot.address, spot.name, item if isinstance(item, str) else f"{item:g}")
+        yield EditableField(spot.address, spot.name, item if isinstance(item, str) else short(item, 15))
     elif item is None and spot.words == ("name",):
         yield EditableField(spot.address, spot.name, "")
     elif is_dataclass(item) and spot.words not in _ENDS:

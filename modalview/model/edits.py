@@ -14,6 +14,7 @@ from modalview.model.parts import Model
 from modalview.model.rules import faults
 from modalview.model.tolerance_text import tolerance_text, typed_entry, typed_tolerance
 from modalview.model.values import Entry, Tolerance, Value
+from modalview.units.show import short
 
 
 class Edit(Protocol):
@@ -140,7 +141,7 @@ def set_number_text(model: Model, address: Address, text: str) -> SetField:
         raise UnitError(
             f'"{text}" cannot be read as a number for {_named(address)}: write it like "7" or "0.5"'
         )
-    return set_field(model, address, number, f"Set {_named(address)} to {number:g}")
+    return set_field(model, address, number, f"Set {_named(address)} to {short(number)}")
 
 
 def _number(text: str) -> float | None:

@@ -4,6 +4,7 @@ from modalview.model.parts import Body, InertiaTensor, Motion, Support
 from modalview.model.rules_context import Context, Findings, points
 from modalview.model.rules_values import above_zero, listed, not_negative, tolerance
 from modalview.model.values import Value
+from modalview.units.show import short
 
 SHAPES = ("box", "disc", "point")
 
@@ -89,7 +90,7 @@ def _triangle(tensor: InertiaTensor) -> Findings:
         others = [other for other in moments if other != key]
         total = sum(moments[other].si for other in others)
         if value.si > total * (1 + ROUNDING):
-            sum_text = f"{' + '.join(others)} = {total:.6g} kg m2"
+            sum_text = f"{' + '.join(others)} = {short(total)} kg m2"
             yield f"inertia . {key}", f'"{value.text}" is more than {sum_text}; no body has such moments'
 
 

@@ -42,6 +42,7 @@ from modalview.units.quantities import (
     TORSIONAL_STIFFNESS,
     Quantity,
 )
+from modalview.units.show import short
 
 # Where each kind of link has a meaning. A shaft train only turns: its springs are shafts.
 KINDS: dict[Motion, tuple[type[Link], ...]] = {
@@ -167,7 +168,7 @@ def _gear(given: Gear, context: Context) -> Findings:
         if ratio and radii.from_.si > 0 and radii.to.si > 0:
             drawn, told = radii.from_.si / radii.to.si, abs(float(ratio))
             if abs(drawn / told - 1) > PITCH_MISMATCH:
-                yield "pitch_radius", f"from over to is {drawn:.4g}, but the ratio is {told:.4g}"
+                yield "pitch_radius", f"from over to is {short(drawn, 4)}, but the ratio is {short(told, 4)}"
 
 
 def _beam(given: Beam, context: Context) -> Findings:

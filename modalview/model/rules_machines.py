@@ -7,6 +7,7 @@ from modalview.model.rules_context import Context, Findings, place_of
 from modalview.model.rules_names import plain_id, plain_name
 from modalview.model.rules_values import above_zero, direction, end, not_negative, share, space_axis
 from modalview.model.values import Entry, is_sane
+from modalview.units.show import short
 
 KINDS_OF_MAGNITUDE = ("force", "torque", "unbalance", "grade", "motion")
 # A single axis cannot turn and a shaft train cannot shift.
@@ -100,7 +101,7 @@ def _order(given: Excitation, owner: Machine, context: Context) -> Findings:
         yield "order", f"an excitation has an order of the speed or a fixed frequency; {found}"
     if given.order is not None:
         if given.order <= 0 or not (is_sane(given.order) or math.isnan(given.order)):
-            yield "order", f"must be above zero and a number of a machine; found {given.order:g}"
+            yield "order", f"must be above zero and a number of a machine; found {short(given.order)}"
         if owner.speed is None:
             yield "order", "is a multiple of the machine's speed, which is missing; give the machine a speed"
     if given.of is None:

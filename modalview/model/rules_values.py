@@ -9,6 +9,7 @@ from modalview.model.rules_context import Context, Findings, points
 from modalview.model.values import Entry, Tolerance, Value, is_sane
 from modalview.units.parse import read
 from modalview.units.quantities import ANGLE
+from modalview.units.show import short
 
 # Axes further from a right angle than this cosine were not meant as right-handed axes.
 SQUARE = 1e-3
@@ -46,7 +47,8 @@ def _is_share(entry: Entry) -> bool:
 def _percent_meant(entry: Entry) -> str:
     """Say that a bare number is a share of one, where it was hardly meant so."""
     bare = not entry.text.rstrip().endswith("%")
-    return f', which is {100 * entry.si:g} %; write "{entry.text} %"' if bare and 1 < entry.si < 100 else ""
+    told = f', which is {short(100 * entry.si)} %; write "{entry.text} %"'
+    return told if bare and 1 < entry.si < 100 else ""
 
 
 def tolerance(key: str, given: Tolerance | None, nominal: Entry | None) -> Findings:

@@ -6,6 +6,7 @@ from typing import Any
 from modalview.errors import UnitError
 from modalview.units.parse import read
 from modalview.units.quantities import RATIO, Quantity
+from modalview.units.show import short
 
 # No number of a machine is beyond these in SI; squares and products of those within stay floating-point
 # numbers, so that nothing computed from a typed value can overflow or vanish.
@@ -41,7 +42,7 @@ class Entry:
         """Read ``text`` as ``quantity``; raise UnitError when it is not one, or of no machine's size."""
         si = read(text, quantity)
         if not is_sane(si):
-            size = f"{si:g} {quantity.si_unit}" if quantity.si_unit != "1" else f"{si:g}"
+            size = short(si) if quantity.si_unit == "1" else f"{short(si)} {quantity.si_unit}"
             raise UnitError(
                 f'"{text}" is {size}; no machine has such a {quantity.name}: check unit and power'
             )

@@ -11,6 +11,7 @@ from modalview.errors import Fault, ModelFaultsError
 from modalview.model.parts import Excitation, Machine, Margin, Model, SpeedRange
 from modalview.model.values import Entry
 from modalview.resonance.results import Band
+from modalview.units.show import short
 
 Number = TypeVar("Number", float, Fraction)
 Typed = Entry | float | Fraction
@@ -100,9 +101,9 @@ def excitation_label(excitation: Excitation) -> str:
     """Return a short label: "1×", "7× vane pass", "100 Hz line"."""
     if excitation.frequency is not None:
         frequency = excitation.frequency.si / RAD_PER_HZ
-        head = f"{frequency:.4g} Hz" if frequency < FOUR_DIGITS else f"{frequency:.0f} Hz"
+        head = f"{short(frequency, 4)} Hz" if frequency < FOUR_DIGITS else f"{short(round(frequency))} Hz"
     else:
-        head = f"{excitation.order:g}×"
+        head = f"{short(excitation.order)}×"
     return f"{head} {excitation.name}" if excitation.name else head
 
 

@@ -3,7 +3,7 @@
 import math
 
 from modalview.resonance.results import Band
-from modalview.units.show import significant
+from modalview.units.show import short, significant
 
 # Below this share one decimal of a per cent would say nothing.
 LEAST_PERCENT = 0.001
@@ -23,7 +23,7 @@ def hz_range(low: float, high: float, digits: int = 3) -> str:
 
 def margin_text(margin: tuple[float, float]) -> str:
     """Return "±15 %" or "−10 % / +20 %"."""
-    below, above = (f"{100 * side:.4g}" for side in margin)
+    below, above = (short(100 * side, 4) for side in margin)
     return f"±{below} %" if below == above else f"−{below} % / +{above} %"
 
 

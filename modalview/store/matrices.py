@@ -18,6 +18,7 @@ import scipy.sparse as sp
 from modalview.errors import Fault, FileFaultsError
 from modalview.store.matrices_text import Header, numbers, read_header, read_text
 from modalview.store.reading import MOST_FREEDOMS
+from modalview.units.show import short
 
 Array = npt.NDArray[np.float64]
 
@@ -136,7 +137,7 @@ def _sparse(found: Array, header: Header, name: str) -> sp.csc_array:
     if wrong.any():
         at = int(np.flatnonzero(wrong.any(axis=1))[0])
         i, j = place[at]
-        reason = f"place ({i:g}, {j:g}) lies outside 1 to {header.rows}"
+        reason = f"place ({short(i, 15)}, {short(j, 15)}) lies outside 1 to {header.rows}"
         raise FileFaultsError((Fault(f"{name}, entry {at + 1}", reason),))
     i, j = (place - 1).astype(np.int64).T
     values = found[:, 2]
@@ -185,15 +186,15 @@ def _symmetric(matrix: sp.csc_array, name: str) -> tuple[sp.csc_array, tuple[str
     positive = (both[0] > 0) & (both[1] > 0)
     scale = np.where(positive, np.sqrt(np.abs(both[0])) * np.sqrt(np.abs(both[1])), largest)
     worst = int(np.argmax(size))
-    measure = f"{size[worst] / largest:.2g} of the largest entry"
+    measure = f"{short(size[worst] / largest, 2)} of the largest entry"
     if bool(np.all(size <= ROUNDING * scale)):
         note = f"{name}: entries across the diagonal differ by at most {measure}; their mean is taken"
         return sp.csc_array((matrix + matrix.T) / 2), (note,)
     i, j = int(row[worst]), int(column[worst])
     reason = (
-        f"is not symmetric: max |A - A^T| / max |A| = {size[worst] / largest:.3g}, worst at "
-        f"({i + 1}, {j + 1}) = {matrix[i, j]:.6g} against ({j + 1}, {i + 1}) = {matrix[j, i]:.6g}; stiffness "
-        "and mass are symmetric, and counts prove nothing otherwise"
+        f"is not symmetric: max |A - A^T| / max |A| = {short(size[worst] / largest, 3)}, worst at "
+        f"({i + 1}, {j + 1}) = {short(matrix[i, j])} against ({j + 1}, {i + 1}) = {short(matrix[j, i])}; "
+        "stiffness and mass are symmetric, and counts prove nothing otherwise"
     )
     raise FileFaultsError((Fault(name, reason),))
 
@@ -203,7 +204,6 @@ def _check_size_of_masses(M: sp.csc_array, name: str) -> None:
     tiny = np.flatnonzero((diagonal > 0) & (diagonal < LEAST_MASS))
     if tiny.size:
         at = int(tiny[0])
-        reason = (
-            f"is {diagonal[at]:g}; no mass is so small. A coordinate without mass has zeros only in its row"
-        )
+        size = short(diagonal[at])
+        reason = f"is {size}; no mass is so small. A coordinate without mass has zeros only in its row"
         raise FileFaultsError((Fault(f"{name}, ({at + 1}, {at + 1})", reason),))

@@ -13,6 +13,7 @@ import numpy.typing as npt
 
 from modalview.errors import Fault, FileAccessError, FileFaultsError
 from modalview.store.reading import LARGEST_BYTES, read_bytes
+from modalview.units.show import short
 
 Array = npt.NDArray[np.float64]
 
@@ -164,7 +165,7 @@ def numbers(text: str, header: Header, name: str) -> Array:
 
 def _refuse_value(value: float, place: str) -> NoReturn:
     if np.isfinite(value):
-        reason = f"is {value:g}; no machine has such a stiffness or mass"
+        reason = f"is {short(value)}; no machine has such a stiffness or mass"
     else:
         reason = f"is {value}; every entry must be a finite number"
     raise FileFaultsError((Fault(place, reason),))

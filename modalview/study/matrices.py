@@ -27,6 +27,7 @@ from modalview.study.matrices_sound import require_mass, require_stiffness
 from modalview.study.results import FoundMode
 from modalview.study.sentence import sentence
 from modalview.study.solve import evidence
+from modalview.units.show import short
 
 RAD_PER_HZ = 2 * math.pi
 
@@ -213,7 +214,7 @@ def _near_evidence(near: NearModes) -> tuple[str, ...]:
         math.sqrt(max(edge, 0.0)) / RAD_PER_HZ for edge in (near.certificate.low, near.certificate.high)
     )
     number = near.modes.number
-    place = f"{number} modes between {low:.6g} and {high:.6g} Hz"
+    place = f"{number} modes between {short(low)} and {short(high)} Hz"
     proven = {
         True: f"{place}, none missed (proven by counts)",
         False: f"{place}; counts disagree: do not rely on this",
@@ -249,9 +250,10 @@ def tolerance_notes(request: MatrixRequest) -> tuple[str, ...]:
 
 
 def _covered(name: str, share: float, word: str) -> str:
-    percent = f"±{100 * share:.4g} %"
+    percent = f"±{short(100 * share, 4)} %"
     return (
-        f"tolerance of {name}: the whole matrix by one common factor, {1 - share:.4g} to {1 + share:.4g}. It "
+        f"tolerance of {name}: the whole matrix by one common factor, {short(1 - share, 4)} to "
+        f"{short(1 + share, 4)}. It "
         f"encloses every mode also where each {word} that {name} is a sum of lies off by itself, none by "
         f"more than {percent} and none negative. It does not cover one that lies off by more, dimensions, or "
         f"entries of {name} changed one by one"

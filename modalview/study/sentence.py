@@ -8,7 +8,7 @@ from modalview.resonance.results import Check, Drive, Verdict
 from modalview.resonance.separation import nearest, separation
 from modalview.resonance.wording import hz_range, margin_text, percent
 from modalview.study.results import FoundMode
-from modalview.units.show import significant
+from modalview.units.show import short, significant
 
 NOTHING_TO_CHECK = "Nothing to check: give a machine its speed, its orders and the margin wanted."
 
@@ -49,8 +49,8 @@ def speed_text(machine: Machine) -> str:
     """Return the speed or range of a machine, in rpm."""
     rpm = 2 * math.pi / 60
     if isinstance(machine.speed, SpeedRange):
-        return f"{machine.speed.from_.si / rpm:.5g} to {machine.speed.to.si / rpm:.5g} rpm"
-    return f"{machine.speed.si / rpm:.5g} rpm" if machine.speed else "no speed"
+        return f"{short(machine.speed.from_.si / rpm, 5)} to {short(machine.speed.to.si / rpm, 5)} rpm"
+    return f"{short(machine.speed.si / rpm, 5)} rpm" if machine.speed else "no speed"
 
 
 def _in_full(model: Model, check: Check, modes: Sequence[FoundMode]) -> str:

@@ -136,7 +136,7 @@ def show(si: float, quantity: Quantity, system: str = "SI", digits: int = 4) -> 
     if quantity == q.FREQUENCY:
         digits = min(digits, MOST_DIGITS)
     unit = _fitting(si, _UNITS[system][quantity], digits)
-    number = _without_end_zeros(significant(si / float(unit.factor), digits))
+    number = short(si / float(unit.factor), digits)
     return f"G {number}" if quantity == q.BALANCE_GRADE else f"{number} {unit.spelling}"
 
 
@@ -152,7 +152,7 @@ def show_si(si: float, quantity: Quantity, digits: int = 4) -> str:
     """
     if quantity in {q.FREQUENCY, q.SPEED}:
         return show(si, q.FREQUENCY, digits=digits)
-    number = _without_end_zeros(significant(si, digits))
+    number = short(si, digits)
     return number if quantity == q.RATIO else f"{number} {quantity.si_unit}"
 
 
@@ -183,6 +183,19 @@ def significant(x: float, digits: int) -> str:
     if -3 <= exponent < 6:
         return f"{float(rounded):.{max(digits - 1 - exponent, 0)}f}"
     return f"{mantissa}e{exponent}"
+
+
+def short(x: float, digits: int = 6) -> str:
+    """Return ``x`` to at most so many significant digits, zeros at the end left out: the style of all texts.
+
+    Plain where the rounded size lies from 0.001 to below 1e6, elsewhere with an exponent as people type it.
+
+    Examples
+    --------
+    >>> short(2950.0), short(1e6), short(0.5), short(1234567.0, 5), short(-2.5e-7)
+    ('2950', '1e6', '0.5', '1.2346e6', '-2.5e-7')
+    """
+    return _without_end_zeros(significant(x, digits))
 
 
 def shown_digits(value: float, error: float) -> int:

@@ -2,6 +2,7 @@
 
 import gzip
 import json
+import re
 import sys
 from pathlib import Path
 
@@ -159,7 +160,7 @@ class TestWords:
             ((), "name a FILE"),
             ((*PAIR, "--speed", "fast"), "--speed"),
             ((*PAIR, "--speed", "20 rpm"), "--speed needs --orders or --frequencies"),
-            ((*PAIR, "--orders", "1", "--margin", "5 %"), "--orders: is a multiple of the machine's speed"),
+            ((*PAIR, "--orders", "1", "--margin", "5 %"), "--orders are multiples of a speed: give --speed"),
             ((*PAIR, "--orders", "1", "--speed", "20 rpm"), "--margin is missing"),
             ((*PAIR, "--orders", "one", "--speed", "20 rpm", "--margin", "5 %"), "--orders wants numbers"),
             ((*PAIR, "--orders", "1,nan", "--speed", "20 rpm", "--margin", "5 %"), "found 'nan'"),
@@ -196,6 +197,14 @@ class TestWords:
         code, out, err = run(capsys, "modes", *words)
         assert (code, out) == (2, "")
         assert says in err
+
+    def test_nothing_to_check_names_the_options(self, capsys):
+        code, out, err = run(capsys, "check", *PAIR)
+        assert (code, err) == (2, "")
+        said = out.split("\n\n")[1]
+        options = {"--orders", "--speed", "--speed-from", "--speed-to", "--frequencies", "--margin"}
+        assert set(re.findall(r"--[\w-]+", said)) == options
+        assert told(capsys, "check", *PAIR)[1]["sentence"] == " ".join(said.split())
 
     def test_a_range_of_speeds_and_one_speed(self, capsys):
         words = (

@@ -81,7 +81,7 @@ GENERAL = f"{BANNER} coordinate real general\n"
         (f"{HEAD}2 2 2\n1 1 1\n% a note\n2 2 1\n", "line 4"),
         (f"{HEAD}2 2 2\n1 1 1\n2 2 nan\n", "entry 2: is nan; every entry must be a finite number"),
         (f"{HEAD}2 2 2\n1 1 -inf\n2 2 1\n", "entry 1: is -inf"),
-        (f"{HEAD}2 2 2\n1 1 1e300\n2 2 1\n", "entry 1: is 1e+300; no machine"),
+        (f"{HEAD}2 2 2\n1 1 1e300\n2 2 1\n", "entry 1: is 1e300; no machine"),
         (f"{BANNER} coordinate integer symmetric\n1 1 1\n1 1 9007199254740995\n", "entry 1"),
         (f"{HEAD}2 2 2\n1 1 1\n3 2 1\n", "entry 2: place (3, 2) lies outside 1 to 2"),
         (f"{HEAD}2 2 2\n1 1 1\n0 1 1\n", "place (0, 1)"),

@@ -102,3 +102,17 @@ def test_without_a_machine():
     assert found.sentence == sentence(found.outlook.request.model, ()) == NOTHING_TO_CHECK
     assert found.outlook.verdict is None
     assert found.outlook.sentence == NOTHING_TO_CHECK
+
+
+@pytest.mark.parametrize(
+    ("speed", "told"),
+    [
+        ("1500 rpm", "1500 rpm"),
+        ("1e6 rpm", "1e6 rpm"),
+        ("999999 rpm", "1e6 rpm"),
+        ("100 Hz", "6000 rpm"),
+        ("29501.3 rpm", "29501 rpm"),
+    ],
+)
+def test_speeds_are_written_in_one_style(speed, told):
+    assert f"1× of {told} (" in said([(26, None)], speed=speed)

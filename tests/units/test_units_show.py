@@ -9,7 +9,7 @@ from hypothesis import strategies as st
 from modalview.units import quantities as q
 from modalview.units.parse import read
 from modalview.units.quantities import Quantity
-from modalview.units.show import SYSTEMS, show, show_si, shown_digits, significant
+from modalview.units.show import SYSTEMS, short, show, show_si, shown_digits, significant
 
 QUANTITIES = tuple(value for value in vars(q).values() if isinstance(value, Quantity))
 
@@ -130,3 +130,36 @@ def test_significant_refuses_less_than_one_digit():
 )
 def test_shown_digits(value, error, digits):
     assert shown_digits(value, error) == digits
+
+
+@pytest.mark.parametrize(
+    ("x", "digits", "text"),
+    [
+        (7.0, 6, "7"),
+        (0.5, 6, "0.5"),
+        (1 / 3, 6, "0.333333"),
+        (2950.4, 5, "2950.4"),
+        (29504.4, 5, "29504"),
+        (1500.0, 2, "1500"),  # zeros before the point stay
+        (123456.0, 4, "123500"),
+        (999999.4, 6, "999999"),
+        (999999.6, 6, "1e6"),
+        (1e6, 6, "1e6"),
+        (1234567.0, 5, "1.2346e6"),
+        (1e12, 6, "1e12"),
+        (-2.5e-7, 6, "-2.5e-7"),
+        (0.001, 6, "0.001"),
+        (0.0009999999, 6, "0.001"),
+        (0.00099, 6, "9.9e-4"),
+        (0.0, 6, "0"),
+        (math.nan, 6, "not a number"),
+        (-math.inf, 6, "-infinite"),
+    ],
+)
+def test_short(x, digits, text):
+    assert short(x, digits) == text
+
+
+@given(st.floats(1e-30, 1e30))
+def test_short_is_read_back_as_a_number(x):
+    assert read(f"{short(x, 15)} kg", q.MASS) == pytest.approx(x, rel=1e-14)
