@@ -4,6 +4,7 @@ import math
 from time import perf_counter
 
 from modalview.assembly.assemble import Assembly, assemble
+from modalview.assembly.dampedterms import has_dashpots
 from modalview.assembly.parameters import Case
 from modalview.bounds.bands import Cases, Counters
 from modalview.bounds.before import before_solve
@@ -60,6 +61,9 @@ def look(request: Request, previous: Outlook | None = None) -> Outlook:
         intervals=scale_intervals(assembly.pencil(), checks),
         not_checked=not_checked(model),
         notes=(*_notes(assembly), *proof_notes),
+        coordinates=assembly.pencil().n,
+        toleranced=bool(assembly.toleranced),
+        dashpots=has_dashpots(assembly),
         seconds=perf_counter() - start,
     )
 

@@ -1,7 +1,7 @@
 """What window and command line are given."""
 
 from collections.abc import Callable
-from dataclasses import dataclass
+from dataclasses import dataclass, fields
 
 import numpy as np
 import numpy.typing as npt
@@ -63,13 +63,12 @@ class Interval:
 
 
 @dataclass(frozen=True, slots=True)
-class Outlook:
-    """What is known before any solve.
+class Known:
+    """What is known before any solve, as it is shown: plain data that is quick to send to another process.
 
     Parameters
     ----------
     request : Request
-    assembly : Assembly
     bounds : Bounds
         Discs, norms, lowest and highest mode.
     checks : tuple of Check
@@ -84,12 +83,17 @@ class Outlook:
         Directions not modelled, orders not listed.
     notes : tuple of str
         What the program did with the model: dropped directions, values taken as exact.
+    coordinates : int
+        Independent coordinates of the model.
+    toleranced : bool
+        Whether any value has a tolerance.
+    dashpots : bool
+        Whether the model has any.
     seconds : float
         Time it took.
     """
 
     request: Request
-    assembly: Assembly
     bounds: Bounds
     checks: tuple[Check, ...]
     verdict: Verdict | None
@@ -97,7 +101,26 @@ class Outlook:
     intervals: tuple[Interval, ...]
     not_checked: tuple[str, ...]
     notes: tuple[str, ...]
+    coordinates: int
+    toleranced: bool
+    dashpots: bool
     seconds: float
+
+
+@dataclass(frozen=True, slots=True)
+class Outlook(Known):
+    """What is known before any solve, with what a solve goes on from.
+
+    Parameters
+    ----------
+    assembly : Assembly
+    """
+
+    assembly: Assembly
+
+    def known(self) -> Known:
+        """Return it without the assembly."""
+        return Known(**{field.name: getattr(self, field.name) for field in fields(Known)})
 
 
 @dataclass(frozen=True, slots=True)

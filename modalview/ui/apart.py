@@ -1,26 +1,45 @@
-"""Solves larger models in a process of their own.
+"""Studies larger models in a process of their own.
 
-Dense solves hold the interpreter lock: in a thread, a model of 300 coordinates stops the window for half a
-second and one of 2,000 for many. Starting the process and importing takes about a second, so it is kept for
-the next solve, and small models stay in the thread.
+Assembling, counting and dense solves hold the interpreter lock: in a thread, a model of 300 coordinates stops
+the window for half a second and one of 2,000 for many. Starting the process and importing takes about a
+second, so it is kept, with what it knows of the model, and small models stay in the thread.
 """
 
 import multiprocessing
-import traceback
 from collections.abc import Callable
-from dataclasses import replace
-from multiprocessing.connection import Connection
-from multiprocessing.context import SpawnProcess
-from typing import Any
+from time import monotonic
+from typing import TYPE_CHECKING, Any
 
 from modalview.errors import CancelledError, KeepclearError
+from modalview.model.parts import FREEDOMS, Model
+from modalview.ui import served
+from modalview.ui.parcels import pieces, unpacked
+from modalview.ui.studies import Find, Step, Tell
+
+if TYPE_CHECKING:
+    from multiprocessing.connection import Connection
+    from multiprocessing.context import SpawnProcess
 
 # From here on a solve in the thread would hold the window up for longer than a tenth of a second.
 LARGE_MODEL = 150
-# Of each mode the largest energy shares are sent; the window shows five.
-SHARES_SENT = 5
+# A state matrix has twice the size and no symmetry: eight times the work, or more.
+LARGE_DAMPED = LARGE_MODEL // 4
+# The process looks whether it was told to stop between steps; one that does not after this long is ended, and
+# what it knew is lost.
+STOP_PATIENCE_S = 2.0
 _LOOK_ROUND_S = 0.02
-_Progress = Callable[[str, float], None]
+
+
+def is_large(model: Model) -> bool:
+    """Return whether a model is studied in the other process; by freedoms, which are quick to count."""
+    freedoms = len(model.bodies) * len(FREEDOMS[model.motion])
+    if freedoms <= LARGE_DAMPED:
+        return False
+    return freedoms > LARGE_MODEL or any(getattr(one, "damping", None) is not None for one in model.links)
+
+
+class ProcessEndedError(KeepclearError):
+    """The other process ended by itself."""
 
 
 class Apart:
@@ -29,29 +48,35 @@ class Apart:
     def __init__(self) -> None:
         self._process: SpawnProcess | None = None
         self._line: Connection | None = None
+        self._stop: Any = None
+        self._sent: Model | None = None
 
-    def solve(self, outlook: Any, stopped: Callable[[], bool], progress: _Progress) -> Any:
-        """Return the study.Solution of an outlook's model, found in the other process, and its damped modes.
-
-        The second is a study.damped.DampedSolution where the model has dashpots, else None.
+    def work(self, model: Model, find: Find, stopped: Callable[[], bool], tell: Tell) -> None:
+        """Let a model be studied; of one that was studied before only the changed parts are sent.
 
         Raises
         ------
         CancelledError
-            ``stopped`` said so; the process is ended at once.
+            ``stopped`` said so.
         KeepclearError
-            The modes could not be found; the text tells why.
+            The model cannot be studied; the text tells why.
         RuntimeError
             An error of the program, with the text of where it came up.
         """
-        process, line = self._running()
         try:
-            line.send(outlook.request.model)
-            sent, damped = await_answer(process, line, stopped, progress)
-        except (CancelledError, ProcessEndedError):
+            self._start()
+            self._send(model, find, stopped)
+            await_answers(self._receive, self._stop.set, stopped, _Unpacking(model, tell))
+        except (EOFError, OSError):
+            status = self._process.exitcode if self._process is not None else None
             self.close()
-            raise
-        return replace(unpacked(sent), outlook=outlook), damped and replace(damped, outlook=outlook)
+            raise ProcessEndedError(
+                f"The process that studied the model ended by itself (status {status}); "
+                "the model may be too large for the memory."
+            ) from None
+        except TooSlowError:
+            self.close()
+            raise CancelledError("Stopped by the user.") from None
 
     def close(self) -> None:
         """End the process, whatever it does."""
@@ -59,115 +84,105 @@ class Apart:
             self._process.terminate()
             self._process.join()
             self._line.close()
-        self._process = self._line = None
+        self._process = self._line = self._stop = self._sent = None
 
-    def _running(self) -> tuple[SpawnProcess, Connection]:
-        if self._process is None or self._line is None or not self._process.is_alive():
-            self.close()
-            context = multiprocessing.get_context("spawn")
-            self._line, theirs = context.Pipe()
-            self._process = context.Process(target=serve, args=(theirs,), daemon=True)
-            self._process.start()
-            theirs.close()
-        return self._process, self._line
-
-
-class ProcessEndedError(KeepclearError):
-    """The other process ended by itself."""
-
-
-def await_answer(
-    process: SpawnProcess, line: Connection, stopped: Callable[[], bool], progress: _Progress
-) -> Any:
-    """Return what the other process found, passing its progress on."""
-    while not stopped():
-        if not line.poll(_LOOK_ROUND_S):
-            continue
-        try:
-            kind, content = line.recv()
-        except (EOFError, OSError):
-            process.join()
-            raise ProcessEndedError(
-                f"The process that looked for the modes ended by itself (status {process.exitcode}); "
-                "the model may be too large for the memory."
-            ) from None
-        if kind == "progress":
-            progress(*content)
-        elif kind == "found":
-            return content
-        else:
-            raise (KeepclearError if kind == "refused" else RuntimeError)(content)
-    raise CancelledError("Stopped by the user.")
-
-
-_SHARES = ("strain", "kinetic", "effective_mass")
-_PLAIN = ("number", "name", "frequency_hz", "numerical_error_hz", "range_hz", "kind", "repeated_with")
-
-
-def packed(solution: Any) -> tuple[Any, Any, Any]:
-    """Return a solution as what is quick to read back: no outlook, no shapes, modes as plain tuples.
-
-    Unpickling objects of our own classes holds the interpreter lock: 10,000 of them for a tenth of a second.
-    """
-    raw = replace(solution.raw, shapes=solution.raw.shapes[:, :0])
-    rest = replace(solution, outlook=None, modes=(), raw=raw)
-    plain = [
-        (
-            tuple(getattr(mode, name) for name in _PLAIN),
-            tuple(
-                tuple((one.id, one.label, one.fraction) for one in getattr(mode, name)[:SHARES_SENT])
-                for name in _SHARES
-            ),
-        )
-        for mode in solution.modes
-    ]
-    return rest, plain, _stacked(solution.modes)
-
-
-def _stacked(modes: Any) -> Any:
-    import numpy as np  # noqa: PLC0415  (in the other process only)
-
-    return np.stack([mode.motion for mode in modes]) if modes else []
-
-
-def unpacked(sent: tuple[Any, Any, Any]) -> Any:
-    """Return the solution that was packed; sensitivities and shapes stay behind."""
-    from modalview.study.results import FoundMode, Share  # noqa: PLC0415  (numpy comes later)
-
-    rest, plain, motions = sent
-    modes = []
-    for (values, shares), motion in zip(plain, motions, strict=True):
-        motion.setflags(write=False)
-        named = {name: tuple(Share(*one) for one in some) for name, some in zip(_SHARES, shares, strict=True)}
-        modes.append(
-            FoundMode(**dict(zip(_PLAIN, values, strict=True)), **named, sensitivity=(), motion=motion)
-        )
-    return replace(rest, modes=tuple(modes))
-
-
-def serve(line: Connection) -> None:
-    """Run in the other process: solve the models that come until the line is closed."""
-    from modalview.assembly.dampedterms import has_dashpots  # noqa: PLC0415  (in the other process only)
-    from modalview.study import solve  # noqa: PLC0415
-    from modalview.study.damped import damped  # noqa: PLC0415
-    from modalview.study.results import Request  # noqa: PLC0415
-
-    previous = None
-    while True:
-        try:
-            model = line.recv()
-        except EOFError:
+    def _start(self) -> None:
+        if self._process is not None and self._process.is_alive():
+            self._stop.clear()
             return
-        request = Request(model, progress=lambda what, share: line.send(("progress", (what, share))))
-        try:
-            found = solve(request, previous)
-            previous = found.outlook
-            dying = None
-            if has_dashpots(previous.assembly):
-                dying = replace(damped(request, found), outlook=None, raw=None)
-            answer = "found", (packed(found), dying)
-        except KeepclearError as error:
-            answer = "refused", str(error)
-        except Exception:  # noqa: BLE001  (the other process has nobody else to tell)
-            answer = "failed", traceback.format_exc()
-        line.send(answer)
+        self.close()
+        context = multiprocessing.get_context("spawn")
+        self._line, theirs = context.Pipe()
+        self._stop = context.Event()
+        self._process = context.Process(target=served.main, args=(theirs, self._stop), daemon=True)
+        self._process.start()
+        theirs.close()
+
+    def _send(self, model: Model, find: Find, stopped: Callable[[], bool]) -> None:
+        before, self._sent = self._sent, None
+        for piece in pieces(before, model):
+            if stopped():
+                self._line.send(served.FORGET)
+                raise CancelledError("Stopped by the user.")
+            self._line.send(piece)
+        self._line.send((served.STUDY, find))
+        self._sent = model
+
+    def _receive(self, seconds: float) -> Any:
+        """Return the next answer, or None when none has come in so many seconds."""
+        if self._line.poll(seconds):
+            return self._line.recv()
+        if not self._process.is_alive() and not self._line.poll(0):
+            self._process.join()
+            raise EOFError
+        return None
+
+
+class TooSlowError(Exception):
+    """The process did not stop when it was told to."""
+
+
+class _Unpacking:
+    """Passes answers on as the window wants them."""
+
+    def __init__(self, model: Model, tell: Tell) -> None:
+        from modalview.study.results import Request  # noqa: PLC0415  (numpy comes later)
+
+        self._request = Request(model)
+        self._known: Any = None
+        self._tell = tell
+
+    def __call__(self, step: Step, content: Any) -> None:
+        content = unpacked(step, content, self._known, self._request)
+        if step is Step.LOOKED:
+            self._known = content
+        self._tell(step, content)
+
+
+def await_answers(
+    receive: Callable[[float], Any], stop: Callable[[], None], stopped: Callable[[], bool], tell: Tell
+) -> None:
+    """Pass the answers to one order on until the last has come.
+
+    Parameters
+    ----------
+    receive : callable
+        Given seconds to wait: the next (step, content), or None.
+    stop : callable
+        Tells the other side to stop.
+    stopped : callable
+        Whether the order is no longer wanted; its answers are dropped then.
+    tell : callable
+
+    Raises
+    ------
+    CancelledError, KeepclearError, RuntimeError
+        What the other side answered.
+    TooSlowError
+    """
+    end: float | None = None
+    endings: list[Exception] = []
+    done = False
+    while not done:
+        if end is None and stopped():
+            end = monotonic() + STOP_PATIENCE_S
+            stop()
+        if end is not None and monotonic() > end:
+            raise TooSlowError
+        step, content = receive(_LOOK_ROUND_S) or (None, None)
+        done = step == served.DONE
+        if step in _ENDINGS:
+            endings.append(_ENDINGS[step](content))
+        elif step is not None and not done and end is None:
+            tell(step, content)
+    if end is not None:
+        raise CancelledError("Stopped by the user.")
+    if endings:
+        raise endings[0]
+
+
+_ENDINGS: dict[Step, Callable[[Any], Exception]] = {
+    Step.STOPPED: lambda _: CancelledError("Stopped by the user."),
+    Step.REFUSED: KeepclearError,
+    Step.FAILED: RuntimeError,
+}

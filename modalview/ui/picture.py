@@ -96,7 +96,7 @@ def _settled(window: Window) -> bool:
     if analysis.refusal is not None or analysis.looking:
         return analysis.refusal is not None
     # Between the outlook and the modes of a small model nothing is under way for a moment.
-    wanted = analysis.automatic and analysis.outlook.assembly.pencil().n <= SMALL_MODEL
+    wanted = analysis.automatic and analysis.outlook.coordinates <= SMALL_MODEL
     solved = analysis.solution_current or not (wanted or analysis.finding)
     return solved and (analysis.plane is not None or bool(analysis.plane_why))
 

@@ -265,9 +265,8 @@ def _drive(check: Any) -> tuple[str, ...]:
 
 def _rests_on(outlook: Any) -> tuple[str, ...]:
     exact = [note for note in outlook.notes if note.startswith("taken as exact")]
-    toleranced = bool(outlook.assembly.toleranced)
     lines = [_sentence(note) for note in exact]
-    if not toleranced:
+    if not outlook.toleranced:
         lines.append("No value has a tolerance: the verdict holds for the values exactly as given.")
     else:
         lines.append(

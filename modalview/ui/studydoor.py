@@ -15,14 +15,15 @@ from modalview.units.quantities import LENGTH, MASS, STIFFNESS
 class Study:
     """What the worker calls: Request, look(request, previous), solve(request, outlook).
 
-    ``damped(request, solution)`` where ``dashpots(outlook)``, and ``plane(outlook, solution, damped)``, the
-    content of the complex plane.
+    ``foretell(solution, outlook)``, the lowest frequencies by their numbers after an edit; ``damped(request,
+    solution)`` where there are dashpots; and ``plane(outlook, solution, damped)``, the content of the complex
+    plane.
     """
 
     request: Callable[..., Any]
     look: Callable[[Any, Any], Any]
     solve: Callable[[Any, Any], Any]
-    dashpots: Callable[[Any], bool]
+    foretell: Callable[[Any, Any], dict[int, float]]
     damped: Callable[[Any, Any], Any]
     plane: Callable[[Any, Any, Any], Any]
 
@@ -31,10 +32,10 @@ class Study:
 def load_study() -> Study:
     """Import the study; takes some tenths of a second the first time."""
     # numpy and scipy come after the first paint
-    from modalview.assembly.dampedterms import has_dashpots  # noqa: PLC0415
     from modalview.drawing.complexplanecontent import plane_content  # noqa: PLC0415
     from modalview.study import look, solve  # noqa: PLC0415
     from modalview.study.damped import damped  # noqa: PLC0415
+    from modalview.study.preview import foretell  # noqa: PLC0415
     from modalview.study.results import Request  # noqa: PLC0415
 
     # What loads itself on first use is loaded now, while nobody waits.
@@ -42,7 +43,7 @@ def load_study() -> Study:
     # The libraries stay for good: looking through their objects for garbage stopped the window for a tenth of
     # a second each time.
     gc.freeze()
-    return Study(Request, look, solve, lambda outlook: has_dashpots(outlook.assembly), damped, plane_content)
+    return Study(Request, look, solve, foretell, damped, plane_content)
 
 
 def _smallest() -> Model:

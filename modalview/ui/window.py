@@ -150,7 +150,7 @@ class Window(Frame):
         outlook = self.analysis.outlook
         self.scale.canvas.show_results(outlook, solution)
         if outlook is not None:
-            self._show_title(str(outlook.verdict or "nothing to check"), outlook.assembly.pencil().n)
+            self._show_title(str(outlook.verdict or "nothing to check"), outlook.coordinates)
         self.banner.show_analysis(self.analysis)
         self.reasons.show_known(outlook, solution)
         if self.analysis.solution is None:

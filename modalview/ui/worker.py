@@ -5,7 +5,6 @@ The study and the libraries below it are imported in that thread, so that the wi
 
 from collections.abc import Callable
 from dataclasses import dataclass, field
-from enum import Enum
 from threading import Event
 from typing import Any
 
@@ -13,22 +12,11 @@ from PySide6.QtCore import QObject, QThread, Signal, Slot
 
 from modalview.errors import CancelledError, KeepclearError
 from modalview.model.parts import Model
-from modalview.ui.apart import LARGE_MODEL, Apart
+from modalview.ui.apart import Apart, is_large
+from modalview.ui.studies import SMALL_MODEL, Find, Step, Studies
 from modalview.ui.studydoor import Study, load_study
 
-# Models of at most so many coordinates find their modes after each edit, unless switched off: below, all
-# modes take a few hundredths of a second.
-SMALL_MODEL = 300
-# Regions of the roots need singular values of a dense matrix: to this size, less than a second.
-PLANE_LIMIT = 400
-
-
-class Find(Enum):
-    """Whether the modes are wanted."""
-
-    NEVER = "only what is known before"
-    IF_SMALL = "where the model is small"
-    ALWAYS = "the person asked"
+__all__ = ["SMALL_MODEL", "Answer", "Find", "Order", "Step", "Worker"]
 
 
 @dataclass(frozen=True, slots=True)
@@ -39,19 +27,6 @@ class Order:
     model: Model
     find: Find
     stop: Event = field(default_factory=Event, compare=False)
-
-
-class Step(Enum):
-    """What an answer tells; in brackets its content."""
-
-    LOOKED = "known before any solve (Outlook)"
-    FINDING = "the solve begins (nothing)"
-    PROGRESSED = "the solve goes on (what is done, share done)"
-    SOLVED = "modes found (Solution)"
-    DAMPED = "damped modes and complex plane (DampedSolution or None, content or None, why not)"
-    REFUSED = "the model cannot be studied (KeepclearError)"
-    FAILED = "an error of the program (Exception)"
-    STOPPED = "the person stopped it (nothing)"
 
 
 @dataclass(frozen=True, slots=True)
@@ -71,13 +46,13 @@ class _Desk(QObject):
     def __init__(self, load: Callable[[], Study]) -> None:
         super().__init__()
         self._load = load
-        self._previous: Any = None
+        self._studies: Studies | None = None
         self._apart = Apart()
 
     @Slot()
     def on_started(self) -> None:
         """Import while nobody waits."""
-        self._load()
+        self._studies = Studies(self._load())
 
     def close(self) -> None:
         """End the other process; called when the thread has ended."""
@@ -101,44 +76,15 @@ class _Desk(QObject):
     def _work(self, order: Order) -> None:
         if order.stop.is_set():
             raise CancelledError
-        study = self._load()
-        request = study.request(
+        if self._studies is None:
+            self._studies = Studies(self._load())
+        place = self._apart if is_large(order.model) else self._studies
+        place.work(
             order.model,
-            number=order.number,
-            cancelled=order.stop.is_set,
-            progress=lambda what, share: self._answer(order, Step.PROGRESSED, (what, share)),
+            order.find,
+            order.stop.is_set,
+            lambda step, content: self._answer(order, step, content),
         )
-        outlook = self._previous = study.look(request, self._previous)
-        self._answer(order, Step.LOOKED, outlook)
-        found = damped = None
-        small = outlook.assembly.pencil().n <= SMALL_MODEL
-        if order.find is Find.ALWAYS or (order.find is Find.IF_SMALL and small):
-            self._answer(order, Step.FINDING)
-            found, damped = self._solve(study, request, outlook)
-            self._answer(order, Step.SOLVED, found)
-        if not order.stop.is_set():
-            self._answer(order, Step.DAMPED, _plane(study, outlook, found, damped))
-
-    def _solve(self, study: Study, request: Any, outlook: Any) -> tuple[Any, Any]:
-        """Return the modes, and the damped ones where there are dashpots."""
-        dashpots = study.dashpots(outlook)
-        # A state matrix has twice the size and no symmetry: eight times the work, or more.
-        if outlook.assembly.pencil().n > (LARGE_MODEL // 4 if dashpots else LARGE_MODEL):
-            return self._apart.solve(outlook, request.cancelled, request.progress)
-        found = study.solve(request, outlook)
-        return found, study.damped(request, found) if dashpots else None
-
-
-def _plane(study: Study, outlook: Any, found: Any, damped: Any) -> tuple[Any, Any, str]:
-    """Return damped modes, content of the complex plane, and why there is none."""
-    number = outlook.assembly.pencil().n
-    if study.dashpots(outlook) and number > PLANE_LIMIT:
-        return (
-            damped,
-            None,
-            f"The regions of the roots are drawn to {PLANE_LIMIT} coordinates; this has {number}.",
-        )
-    return damped, study.plane(outlook, found, damped), ""
 
 
 class Worker(QObject):

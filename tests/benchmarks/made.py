@@ -74,3 +74,40 @@ def _mount(name: str, start: dict[str, Any], end: dict[str, Any], rng: np.random
         "tolerance": "10 %",
         "stiffness": {"x": f"{stiffness:.4e} N/m", "y": f"{1.7 * stiffness:.4e} N/m"},
     }
+
+
+def chain_text(bodies: int, seed: int = 1) -> str:
+    """Return the file of a chain along one axis: each mass on a spring to the one before, all toleranced."""
+    rng = np.random.default_rng(seed)
+    masses, stiffnesses = rng.uniform(10, 1000, bodies), 10 ** rng.uniform(5, 8, bodies)
+    document = {
+        "format": "keepclear",
+        "version": 1,
+        "title": "timing",
+        "motion": "single axis",
+        "bodies": [
+            {"id": f"b{i}", "mass": f"{mass:.1f} kg", "tolerance": "5 %", "position": ["0 m", f"{i + 1} m"]}
+            for i, mass in enumerate(masses)
+        ],
+        "supports": [{"id": "s", "position": ["0 m", "0 m"]}],
+        "links": [
+            {
+                "id": f"k{i}",
+                "kind": "spring",
+                "from": {"body": f"b{i - 1}"} if i else {"support": "s"},
+                "to": {"body": f"b{i}"},
+                "stiffness": f"{stiffness:.4e} N/m",
+                "tolerance": "10 %",
+            }
+            for i, stiffness in enumerate(stiffnesses)
+        ],
+        "machines": [
+            {
+                "id": "m",
+                "speed": {"from": "600 rpm", "to": "1800 rpm"},
+                "margin": "10 %",
+                "excitations": CHECKS,
+            }
+        ],
+    }
+    return json.dumps(document, indent=1)

@@ -7,8 +7,9 @@ import pytest
 
 from modalview.errors import CancelledError, ModelFaultsError
 from modalview.errors import Fault as OneFault
-from modalview.model.parts import Model
+from modalview.model.parts import Body, Model
 from modalview.ui.analysis import Analysis
+from modalview.ui.apart import LARGE_MODEL
 from modalview.ui.studydoor import Study
 from modalview.ui.worker import Find, Step, Worker
 
@@ -31,8 +32,7 @@ class Bench:
         del previous
         if self.error is not None:
             raise self.error
-        pencil = SimpleNamespace(n=self.coordinates)
-        return SimpleNamespace(request=request, assembly=SimpleNamespace(pencil=lambda: pencil))
+        return SimpleNamespace(request=request, coordinates=self.coordinates, dashpots=self.dashpots)
 
     def solve(self, request, outlook):
         self.solving.set()
@@ -47,7 +47,7 @@ class Bench:
             self.request,
             self.look,
             self.solve,
-            dashpots=lambda _outlook: self.dashpots,
+            foretell=lambda _solution, _outlook: {1: 12.5},
             damped=lambda _request, found: SimpleNamespace(outlook=found.outlook),
             plane=lambda _outlook, _found, _damped: "plane",
         )
@@ -89,13 +89,29 @@ def test_an_order_is_looked_at_and_a_small_model_solved(worker, bench, answers, 
 def test_a_model_that_is_not_small_is_solved_only_when_asked(worker, bench, answers, qtbot):
     bench.go.set()
     bench.coordinates = 301
-    elsewhere = SimpleNamespace(solve=lambda outlook, *_: (outlook, None), close=lambda: None)
-    worker._desk._apart = elsewhere
     worker.order(FIRST, Find.IF_SMALL)
     qtbot.waitUntil(lambda: Step.LOOKED in steps(answers))
     worker.order(FIRST, Find.ALWAYS)
     qtbot.waitUntil(lambda: Step.SOLVED in steps(answers))
     assert steps(answers).count(Step.FINDING) == 1
+
+
+def test_a_large_model_is_studied_apart(worker, answers, qtbot):
+    many = Model(bodies=tuple(Body(id=f"b{n}") for n in range(LARGE_MODEL + 1)))
+
+    class Elsewhere:
+        def work(self, model, find, stopped, tell):
+            assert find is Find.NEVER
+            assert not stopped()
+            tell(Step.LOOKED, model)
+
+        def close(self):
+            pass
+
+    worker._desk._apart = Elsewhere()
+    worker.order(many, Find.NEVER)
+    qtbot.waitUntil(lambda: Step.LOOKED in steps(answers))
+    assert answers[0].content is many
 
 
 def test_answers_to_an_older_order_are_dropped_and_its_solve_is_stopped(worker, bench, answers, qtbot):
