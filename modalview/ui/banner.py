@@ -2,11 +2,11 @@
 
 from typing import Any
 
-from PySide6.QtCore import Qt, QTimer, Signal
-from PySide6.QtGui import QMouseEvent
+from PySide6.QtCore import QRect, Qt, QTimer, Signal
+from PySide6.QtGui import QMouseEvent, QResizeEvent
 from PySide6.QtWidgets import (
-    QBoxLayout,
     QFrame,
+    QGridLayout,
     QHBoxLayout,
     QLabel,
     QProgressBar,
@@ -18,8 +18,12 @@ from PySide6.QtWidgets import (
 from modalview.ui.analysis import Analysis
 from modalview.ui.symbols import VerdictSign
 from modalview.ui.theme import LIGHT, Theme
+from modalview.ui.wording import kept_together, one_line
 
 _BLINK_MS = 250
+_CLICK = "Click for the whole reasoning"
+# Lines of the sentence: at most so many, and of the height of the window at most this share.
+_MOST_LINES, _MOST_SHARE = 6, 0.24
 _WORDS = {
     "clear": "Clear",
     "clear at nominal only": "Clear at nominal only",
@@ -28,15 +32,73 @@ _WORDS = {
 
 
 class _Sentence(QLabel):
-    """A click asks why; what is marked with the pointer can be copied."""
+    """As many lines as there is room for; a click asks why, and what is marked can be copied."""
 
     clicked = Signal()
+
+    def __init__(self, parent: QWidget | None = None) -> None:
+        super().__init__(parent)
+        self._whole, self._lines = "", _MOST_LINES
+        self.setObjectName("verdictSentence")
+        self.setWordWrap(True)
+        self.setTextInteractionFlags(Qt.TextInteractionFlag.TextSelectableByMouse)
+        self.setSizePolicy(QSizePolicy.Policy.Expanding, QSizePolicy.Policy.MinimumExpanding)
+        self.setAccessibleName("Verdict")
+
+    def say(self, text: str) -> None:
+        """Show a sentence; where it has no room its end stands in the tool tip and in the reasoning."""
+        self._whole = one_line(text)
+        self.setAccessibleDescription(self._whole)
+        self._fit()
+
+    def set_most_lines(self, lines: int) -> None:
+        """Show at most so many lines."""
+        if lines != self._lines:
+            self._lines = lines
+            self._fit()
+
+    def resizeEvent(self, event: QResizeEvent) -> None:  # noqa: N802  (Qt's name)
+        """Cut anew."""
+        super().resizeEvent(event)
+        self._fit()
 
     def mouseReleaseEvent(self, event: QMouseEvent) -> None:  # noqa: N802  (Qt's name)
         """Ask, unless something was marked."""
         super().mouseReleaseEvent(event)
         if event.button() == Qt.MouseButton.LeftButton and not self.hasSelectedText():
             self.clicked.emit()
+
+    @property
+    def whole(self) -> str:
+        """What is said, whether or not all of it has room."""
+        return self._whole
+
+    def _fit(self) -> None:
+        wanted = kept_together(self._whole)
+        shown = self._cut(wanted, self.contentsRect().width())
+        self.setToolTip(_CLICK if shown == wanted else f"{self._whole}\n\n{_CLICK}")
+        if shown != self.text():
+            self.setText(shown)
+
+    def _cut(self, text: str, room: int) -> str:
+        """Return a text, or as many of its words as the lines take at a width in pixels."""
+        if self._fits(text, room):
+            return text
+        words = text.split(" ")
+        low, high = 1, len(words)
+        while high - low > 1:
+            middle = (low + high) // 2
+            low, high = (middle, high) if self._fits(_cut_off(words, middle), room) else (low, middle)
+        return _cut_off(words, low)
+
+    def _fits(self, text: str, room: int) -> bool:
+        metrics = self.fontMetrics()
+        need = metrics.boundingRect(QRect(0, 0, room, 100_000), Qt.TextFlag.TextWordWrap, text).height()
+        return need <= self._lines * metrics.lineSpacing()
+
+
+def _cut_off(words: list[str], count: int) -> str:
+    return f"{' '.join(words[:count])} …"
 
 
 class Banner(QFrame):
@@ -51,17 +113,12 @@ class Banner(QFrame):
         self.setObjectName("banner")
         self._theme = LIGHT
         self._verdict: str | None = None
-        self.sign = VerdictSign(24, self)
+        self._narrow = False
+        self.sign = VerdictSign(1.6, self)
         self.word = QLabel(self)
         self.word.setObjectName("verdictWord")
         self.sentence = _Sentence(self)
         self.sentence.clicked.connect(self.why_asked)
-        self.sentence.setToolTip("Click for the whole reasoning")
-        self.sentence.setObjectName("verdictSentence")
-        self.sentence.setWordWrap(True)
-        self.sentence.setTextInteractionFlags(Qt.TextInteractionFlag.TextSelectableByMouse)
-        self.sentence.setSizePolicy(QSizePolicy.Policy.Expanding, QSizePolicy.Policy.MinimumExpanding)
-        self.sentence.setAccessibleName("Verdict")
         self.progress = QProgressBar(self)
         self.progress.setAccessibleName("Progress of finding modes")
         self.progress.setFixedWidth(150)
@@ -83,22 +140,29 @@ class Banner(QFrame):
         self._show_progress(shown=False)
 
     def _lay_out(self) -> None:
-        layout = QHBoxLayout(self)
-        layout.setContentsMargins(16, 7, 12, 7)
-        layout.setSpacing(10)
-        layout.addWidget(self.sign)
-        layout.addWidget(self.word)
-        layout.addWidget(self.sentence, 1)
-        self._buttons = QBoxLayout(QBoxLayout.Direction.LeftToRight)
-        self._buttons.setSpacing(6)
+        self._grid = QGridLayout(self)
+        self._grid.setContentsMargins(16, 7, 12, 7)
+        self._grid.setHorizontalSpacing(10)
+        self._grid.setVerticalSpacing(4)
+        self._grid.setColumnStretch(2, 1)
+        buttons = QHBoxLayout()
+        buttons.setSpacing(6)
         for widget in (self.why, self.progress, self.cancel, self.find):
-            self._buttons.addWidget(widget)
-        layout.addLayout(self._buttons)
+            buttons.addWidget(widget)
+        self._grid.addWidget(self.sign, 0, 0)
+        self._grid.addWidget(self.word, 0, 1)
+        self._grid.addLayout(buttons, 0, 3)
+        self._grid.addWidget(self.sentence, 0, 2)
 
-    def stack_buttons(self, *, stacked: bool) -> None:
-        """Put the buttons one above the other, where the sentence needs the width."""
-        direction = QBoxLayout.Direction
-        self._buttons.setDirection(direction.BottomToTop if stacked else direction.LeftToRight)
+    def fit(self, height: int, *, narrow: bool) -> None:
+        """Fit into a window of a height in pixels; in a narrow one the sentence has a row of its own."""
+        lines = int(_MOST_SHARE * height / self.sentence.fontMetrics().lineSpacing())
+        self.sentence.set_most_lines(min(max(lines, 2), _MOST_LINES))
+        if narrow != self._narrow:
+            self._narrow = narrow
+            self._grid.removeWidget(self.sentence)
+            place = (1, 0, 1, 4) if narrow else (0, 2, 1, 1)
+            self._grid.addWidget(self.sentence, *place)
 
     def set_theme(self, theme: Theme) -> None:
         """Repaint the sign."""
@@ -117,12 +181,12 @@ class Banner(QFrame):
         self.word.setProperty("verdict", verdict or "none")
         self.word.style().polish(self.word)
         self._keep_height(settled=not (analysis.looking or analysis.finding))
-        self.sentence.setText(sentence)
+        self.sentence.say(sentence)
         self.show_busy(analysis)
 
     def _keep_height(self, *, settled: bool) -> None:
         """Let the banner grow but not shrink while a study goes on, so that the sheet below stands still."""
-        lines = 2 * self.sentence.fontMetrics().lineSpacing()
+        lines = (1 if self._narrow else 2) * self.sentence.fontMetrics().lineSpacing()
         self.sentence.setMinimumHeight(lines if settled else max(lines, self.sentence.height()))
 
     def show_busy(self, analysis: Analysis) -> None:

@@ -7,6 +7,7 @@ from PySide6.QtWidgets import QFrame, QGridLayout, QLabel, QWidget
 
 from modalview.ui.symbols import VerdictSign
 from modalview.ui.theme import Theme
+from modalview.ui.wording import kept_together, one_line
 from modalview.units.show import significant
 
 _TURN = 6.283185307179586  # rad of one turn
@@ -55,18 +56,13 @@ def nearest_text(check: Any) -> str:
     return words
 
 
-def _kept_together(text: str) -> str:
-    """Keep numbers and their units on one line."""
-    return text.replace(" %", "\u00a0%").replace(" Hz", "\u00a0Hz")
-
-
 class CheckCard(QFrame):
     """A card of the results; updated in place on every edit."""
 
     def __init__(self, parent: QWidget | None = None) -> None:
         super().__init__(parent)
         self.setProperty("role", "card")
-        self.sign = VerdictSign(17, self)
+        self.sign = VerdictSign(1.2, self)
         self.label = QLabel(self)
         self.label.setProperty("role", "strong")
         self.frequency = QLabel(self)
@@ -97,16 +93,16 @@ class CheckCard(QFrame):
         """
         verdict = str(check.verdict)
         self.sign.show_verdict(verdict, theme)
-        label = f"{machine}: {check.band.label}" if machine else check.band.label
-        self.label.setText(label)
+        label = one_line(f"{machine}: {check.band.label}" if machine else check.band.label)
+        self.label.setText(kept_together(label))
         self.frequency.setText(excitation_text(check.band))
         self.verdict.setText(check.wording)
         self.verdict.setProperty("verdict", verdict)
         self.verdict.style().polish(self.verdict)
         nearest = nearest_text(check) if current else ""
-        self.nearest.setText(_kept_together(nearest))
+        self.nearest.setText(kept_together(nearest))
         self.nearest.setVisible(bool(nearest))
-        self.reason.setText(_kept_together(check.reason))
+        self.reason.setText(kept_together(check.reason))
         self.reason.setVisible(not nearest or verdict != "clear")
         self.setToolTip(f"{check.band.check}: {check.reason}\n{_margin_text(check.band)}")
         self.setAccessibleName(f"{label}, {self.frequency.text()}: {check.wording}")

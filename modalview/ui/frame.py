@@ -2,12 +2,10 @@
 
 from typing import Any
 
-from PySide6.QtCore import Qt
 from PySide6.QtGui import QFontMetrics, QResizeEvent
 from PySide6.QtWidgets import (
     QApplication,
     QMainWindow,
-    QSplitter,
     QStackedWidget,
     QStyle,
     QVBoxLayout,
@@ -30,6 +28,7 @@ from modalview.ui.planeview import PlaneView
 from modalview.ui.playbar import PlayBar, speed_of
 from modalview.ui.reasons import Reasons
 from modalview.ui.results import Results
+from modalview.ui.rooms import THREE_COLUMNS, Rooms
 from modalview.ui.scale import ScalePanel
 from modalview.ui.settings import Setting, Settings, settings_text
 from modalview.ui.settingsdialog import SettingsDialog
@@ -41,10 +40,7 @@ from modalview.ui.welcome import Welcome
 
 _SIZE = (1280, 800)
 _ZOOM = 1.25
-# In heights of a line, so that larger text keeps its room.
-_RESULTS_WIDTH, _BELOW_HEIGHT = 17.5, 13.5
-# Smaller windows, in heights of a line, put scale and results, or sheet and modes, under tabs.
-_THREE_COLUMNS, _TWO_ROWS = 60.0, 34.0
+_LEAST_SIZE = (640, 440)
 _PHASE_STEP = FULL_TURN / 24
 
 
@@ -60,7 +56,7 @@ class Frame(QMainWindow):
 
     def _build(self) -> None:
         self.resize(*_SIZE)
-        self.setMinimumSize(840, 540)
+        self.setMinimumSize(*_LEAST_SIZE)
         self.setAcceptDrops(True)
         self.swing = Swing(self)
         self.banner = Banner(self)
@@ -86,9 +82,7 @@ class Frame(QMainWindow):
         self.pages.addWidget(self.work)
         self.setCentralWidget(self.pages)
 
-    def _places(self) -> QSplitter:
-        self._above = self._drawing()
-        self._kept_rows: list[int] | None = None
+    def _places(self) -> Rooms:
         self.below = Pages("Places under the sheet", self)
         self.proof = self.below.line
         for name, title, place in (
@@ -99,22 +93,9 @@ class Frame(QMainWindow):
         ):
             self.below.add(name, title, place)
         self.below.offer("damped", there=False)
-        self._left = QSplitter(Qt.Orientation.Vertical, self)
-        self._left.addWidget(self._above)
-        self._left.addWidget(self.below)
-        self._left.setStretchFactor(0, 1)
-        self._left.setSizes([440, 236])
-        self._left.setChildrenCollapsible(False)
-        self.side = Pages("Frequency scale or results", self)
-        self.side.hide()
-        self._columns = QSplitter(Qt.Orientation.Horizontal, self)
-        for widget in (self._left, self.scale, self.results, self.side):
-            self._columns.addWidget(widget)
-        self._columns.setStretchFactor(0, 3)
-        self._columns.setStretchFactor(1, 1)
-        self._columns.setSizes([652, 322, 306, 0])
-        self._columns.setChildrenCollapsible(False)
-        return self._columns
+        self.rooms = Rooms(self._drawing(), self.below, (self.scale, self.results), self)
+        self.side = self.rooms.side
+        return self.rooms
 
     def _drawing(self) -> QWidget:
         above = QWidget(self)
@@ -130,15 +111,7 @@ class Frame(QMainWindow):
 
     def give_room(self, name: str) -> None:
         """Give the complex plane half of the height while it is shown."""
-        if self.below.has("sheet"):
-            return
-        if name == "plane" and self._kept_rows is None:
-            self._kept_rows = self._left.sizes()
-            half = sum(self._kept_rows) // 2
-            self._left.setSizes([half, half])
-        elif name != "plane" and self._kept_rows is not None:
-            self._left.setSizes(self._kept_rows)
-            self._kept_rows = None
+        self.rooms.give_half(wanted=name == "plane")
 
     def resizeEvent(self, event: QResizeEvent) -> None:  # noqa: N802  (Qt's name)
         """Let places share tabs where there is no room for all of them."""
@@ -148,38 +121,15 @@ class Frame(QMainWindow):
     def arrange(self) -> None:
         """Put the places side by side, or under tabs in a window too small for its text."""
         line = QFontMetrics(QApplication.font()).height()
-        self._share_columns(shared=self.width() < _THREE_COLUMNS * line)
+        narrow = self.width() < THREE_COLUMNS * line
+        self.banner.fit(self.height(), narrow=narrow)
+        self.scale.stand_alone(alone=not narrow)
+        self.rooms.arrange(self.width(), self.height(), line)
         if not self.reasons.isHidden():
-            self.reasons.lie_over(self._columns.geometry())
-        self._share_rows(shared=self.height() < _TWO_ROWS * line)
+            self._lay_reasons()
 
-    def _share_columns(self, *, shared: bool) -> None:
-        if shared == self.side.has("scale"):
-            return
-        if shared:
-            self.side.add("scale", "Scale", self.scale)
-            self.side.add("results", "Results", self.results)
-            self.side.show()
-            self._columns.setSizes([round(0.58 * self.width()), round(0.42 * self.width())])
-        else:
-            for number, name in enumerate(("scale", "results"), start=1):
-                place = self.side.take(name)
-                self._columns.insertWidget(number, place)
-                place.show()
-            self.side.hide()
-            self._columns.setSizes([round(share * self.width()) for share in (0.51, 0.25, 0.24)] + [0])
-        self.banner.stack_buttons(stacked=shared)
-
-    def _share_rows(self, *, shared: bool) -> None:
-        if shared == self.below.has("sheet"):
-            return
-        if shared:
-            self.below.add("sheet", "Sheet", self._above, at=0)
-            self.below.show_page("sheet")
-        else:
-            self._left.insertWidget(0, self.below.take("sheet"))
-            self._above.show()
-            self._left.setSizes([440, 236])
+    def _lay_reasons(self) -> None:
+        self.reasons.lie_over(self.rooms.geometry(), self.rooms.drawing)
 
     # Looks
 
@@ -198,9 +148,6 @@ class Frame(QMainWindow):
         self.parts.lines.set_theme(theme)
         self.parts.fit_columns()
         self.play_bar.set_theme(theme)
-        line = QFontMetrics(QApplication.font()).height()
-        self.results.setMinimumWidth(round(_RESULTS_WIDTH * line))
-        self.below.setMinimumHeight(round(_BELOW_HEIGHT * line))
         self.welcome.set_theme(theme)
         self.arrange()
 
@@ -272,7 +219,7 @@ class Frame(QMainWindow):
 
     def on_go_to_results(self) -> None:
         """Give the keyboard to the first field of the results."""
-        self.side.show_page("results")
+        self.rooms.show_place("results")
         self.results.setFocus()
         self.results.focusNextChild()
 
@@ -294,7 +241,7 @@ class Frame(QMainWindow):
     def on_why(self) -> None:
         """Unfold the reasoning behind the verdict, or fold it."""
         if self.reasons.isHidden():
-            self.reasons.lie_over(self._columns.geometry())
+            self._lay_reasons()
             self.reasons.open()
         else:
             self.reasons.fold()

@@ -1,6 +1,7 @@
 """Places that share one room: a row of tabs over the one that is shown."""
 
 from PySide6.QtCore import Signal
+from PySide6.QtGui import QShowEvent
 from PySide6.QtWidgets import QHBoxLayout, QSizePolicy, QStackedWidget, QTabBar, QVBoxLayout, QWidget
 
 from modalview.ui.elided import ElidedLabel
@@ -16,9 +17,9 @@ class Pages(QWidget):
         self.tabs = QTabBar(self)
         self.tabs.setDrawBase(False)
         self.tabs.setExpanding(False)
-        self.tabs.setUsesScrollButtons(False)
+        self.tabs.setUsesScrollButtons(True)
         self.tabs.setAccessibleName(accessible_name)
-        self.tabs.setSizePolicy(QSizePolicy.Policy.Minimum, QSizePolicy.Policy.Preferred)
+        self.tabs.setSizePolicy(QSizePolicy.Policy.Preferred, QSizePolicy.Policy.Fixed)
         self.line = ElidedLabel(self)
         self.line.setProperty("role", "small")
         self._stack = QStackedWidget(self)
@@ -43,6 +44,7 @@ class Pages(QWidget):
         self._stack.addWidget(place)
         index = self.tabs.insertTab(self.tabs.count() if at is None else at, title)
         self.tabs.setTabData(index, name)
+        self.refit()
         self._on_changed(self.tabs.currentIndex())
 
     def take(self, name: str) -> QWidget | None:
@@ -73,6 +75,15 @@ class Pages(QWidget):
     def current(self) -> str:
         """Return the name of the place shown."""
         return self.tabs.tabData(self.tabs.currentIndex()) or ""
+
+    def showEvent(self, event: QShowEvent) -> None:  # noqa: N802  (Qt's name)
+        """Ask anew: the tabs have measured their texts by now."""
+        super().showEvent(event)
+        self.refit()
+
+    def refit(self) -> None:
+        """Give the tabs the room that their texts need now: hidden ones do not ask for it themselves."""
+        self.tabs.updateGeometry()
 
     def _index(self, name: str) -> int:
         return next((i for i in range(self.tabs.count()) if self.tabs.tabData(i) == name), -1)

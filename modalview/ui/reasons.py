@@ -13,10 +13,8 @@ from modalview.ui.theme import LIGHT, Theme
 
 _SIGNS = {"clear": "✓", "clear at nominal only": "!", "mode in band": "✕"}
 _HEADING = '<h4 style="margin:10px 0 3px 0">'
-# Of the place it lies over: the scale and the results stay in sight.
-_SHARE = (0.66, 0.72)
-# In heights of a line: it is never wider, nor narrower where there is room.
-_WIDTHS = (46.0, 62.0)
+# Of the height of the place it lies over, and its least width in heights of a line.
+_SHARE, _LEAST_WIDTH = 0.72, 40.0
 
 
 class Reasons(QFrame):
@@ -56,11 +54,11 @@ class Reasons(QFrame):
         self._write()
         self.text.setFocus()
 
-    def lie_over(self, place: QRect) -> None:
-        """Cover a part of a place, from its upper left corner."""
+    def lie_over(self, place: QRect, drawing: QRect) -> None:
+        """Cover the sheet, and the modes in part; more of the place where the sheet is narrow."""
         line = self.fontMetrics().height()
-        wide = min(max(_SHARE[0] * place.width(), _WIDTHS[0] * line), _WIDTHS[1] * line, place.width() - 12)
-        self.setGeometry(place.left(), place.top(), round(wide), round(_SHARE[1] * place.height()))
+        wide = min(max(drawing.width(), _LEAST_WIDTH * line), place.width() - 1)
+        self.setGeometry(place.left(), place.top(), round(wide), round(_SHARE * place.height()))
 
     def fold(self) -> None:
         """Fold away."""
@@ -109,7 +107,7 @@ def _check_html(check: CheckReasoning, theme: Theme) -> str:
 def _counts(check: CheckReasoning, theme: Theme) -> str:
     head = "".join(
         f'<td style="color:{theme.quiet}; padding-right:18px">{text}</td>'
-        for text in ("counted at", "modes", "")
+        for text in ("at values", "modes counted", "number")
     )
     rows = "".join(
         f'<tr><td style="padding-right:18px">{escape(one.values)}</td>'

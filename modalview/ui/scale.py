@@ -105,17 +105,22 @@ class ScalePanel(QFrame):
         self.discs.setToolTip("Where every mode must lie, read from the rows of the model's matrices")
         self.discs.toggled.connect(self.canvas.show_discs)
         self.discs.toggled.connect(self.discs_switched)
-        heading = QLabel("Frequency scale", self)
-        heading.setProperty("role", "heading")
+        self.heading = QLabel("Frequency scale", self)
+        self.heading.setProperty("role", "heading")
         top = QHBoxLayout()
         top.setContentsMargins(8, 0, 8, 0)
-        top.addWidget(heading, 1)
+        top.addWidget(self.heading)
+        top.addStretch(1)
         top.addWidget(self.discs)
         layout = QVBoxLayout(self)
         layout.setContentsMargins(4, 8, 2, 4)
         layout.setSpacing(2)
         layout.addLayout(top)
         layout.addWidget(self.canvas, 1)
+
+    def stand_alone(self, *, alone: bool) -> None:
+        """Show the heading; under a tab the tab is one."""
+        self.heading.setVisible(alone)
 
 
 def _modes(number: int | None) -> str:

@@ -3,7 +3,7 @@
 import time
 
 from PySide6.QtCore import QTimer
-from PySide6.QtWidgets import QLabel, QStatusBar
+from PySide6.QtWidgets import QStatusBar
 
 from modalview.ui.analysis import Analysis
 from modalview.ui.document import Document
@@ -33,9 +33,11 @@ class StatusLine:
 
     def __init__(self, bar: QStatusBar) -> None:
         self.state = ElidedLabel(bar)
-        caution = QLabel(CAUTION, bar)
+        self.caution = ElidedLabel(bar)
+        self.caution.setText(CAUTION)
+        self.caution.give_way_last()
         bar.addWidget(self.state, 1)
-        bar.addPermanentWidget(caution)
+        bar.addPermanentWidget(self.caution)
         bar.setSizeGripEnabled(False)
         self._document: Document | None = None
         self._analysis: Analysis | None = None

@@ -1,8 +1,8 @@
 """The verdict's sign: one shape for each answer, so that it reads without colour."""
 
 from PySide6.QtCore import QLineF, QPointF, QRectF, QSize, Qt
-from PySide6.QtGui import QColor, QPainter, QPaintEvent, QPen, QPolygonF
-from PySide6.QtWidgets import QSizePolicy, QWidget
+from PySide6.QtGui import QColor, QFontMetrics, QPainter, QPaintEvent, QPen, QPolygonF
+from PySide6.QtWidgets import QApplication, QSizePolicy, QWidget
 
 from modalview.ui.theme import LIGHT, Theme
 
@@ -45,11 +45,12 @@ def paint_sign(painter: QPainter, box: QRectF, verdict: str | None, theme: Theme
 
 
 class VerdictSign(QWidget):
-    """The sign as a widget; its meaning stands in words beside it."""
+    """The sign as a widget, as large as text beside it; its meaning stands in words there."""
 
-    def __init__(self, size_px: int, parent: QWidget | None = None) -> None:
+    def __init__(self, times: float, parent: QWidget | None = None) -> None:
+        """Make a sign so many times as high as a line of the program's text."""
         super().__init__(parent)
-        self._size = size_px
+        self._times = times
         self._verdict: str | None = None
         self._theme = LIGHT
         self.setSizePolicy(QSizePolicy.Policy.Fixed, QSizePolicy.Policy.Fixed)
@@ -57,13 +58,16 @@ class VerdictSign(QWidget):
     def show_verdict(self, verdict: str | None, theme: Theme) -> None:
         """Show the sign of a verdict; None is the dash of nothing checked."""
         self._verdict, self._theme = verdict, theme
+        self.updateGeometry()
         self.update()
 
     def sizeHint(self) -> QSize:  # noqa: N802  (Qt's name)
         """Return the fixed size."""
-        return QSize(self._size, self._size)
+        size = round(self._times * QFontMetrics(QApplication.font()).height())
+        return QSize(size, size)
 
     def paintEvent(self, event: QPaintEvent) -> None:  # noqa: N802  (Qt's name)
         """Paint the sign."""
         del event
-        paint_sign(QPainter(self), QRectF(0, 0, self._size, self._size), self._verdict, self._theme)
+        size = min(self.width(), self.height())
+        paint_sign(QPainter(self), QRectF(0, 0, size, size), self._verdict, self._theme)

@@ -39,7 +39,7 @@ def test_an_example_opens_from_its_button_and_is_solved(window, qtbot):
     qtbot.mouseClick(window.welcome.buttons[0], Qt.MouseButton.LeftButton)
     settle(qtbot, window)
     assert window.banner.word.text() == "Mode in band"
-    assert "mode 1 at 51.3 Hz" in window.banner.sentence.text()
+    assert "mode 1 at 51.3 Hz" in window.banner.sentence.whole
     assert window.modes.row.modes.rowCount() == 3
     assert [card.verdict.text() for card in window.results._cards] == [
         "mode in band",
