@@ -12,6 +12,9 @@ from modalview.units.show import short
 # numbers, so that nothing computed from a typed value can overflow or vanish.
 SMALLEST, LARGEST = 1e-30, 1e30
 
+# Source of a value that a new part was drawn with and that nobody has typed yet.
+STARTING = "starting value, not given yet"
+
 
 def is_sane(number: float) -> bool:
     """Tell whether a number is zero or of a size that can be computed with.
