@@ -130,7 +130,7 @@ def in_two(text: str, room: float, text_scale: float = 1.0) -> tuple[str, ...]:
 
 
 def _order(excitation: Excitation) -> str:
-    return f"{short(excitation.order)}×"
+    return f"{short(excitation.order or 0.0)}×"
 
 
 def _mount_lines(mount: Mount, default: Tolerance | None) -> list[str]:

@@ -103,7 +103,7 @@ def excitation_label(excitation: Excitation) -> str:
         frequency = excitation.frequency.si / RAD_PER_HZ
         head = f"{short(frequency, 4)} Hz" if frequency < FOUR_DIGITS else f"{short(round(frequency))} Hz"
     else:
-        head = f"{short(excitation.order)}×"
+        head = f"{short(excitation.order or 0.0)}×"
     return f"{head} {excitation.name}" if excitation.name else head
 
 

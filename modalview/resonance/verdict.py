@@ -1,8 +1,8 @@
 """The verdict of a check, from counts alone."""
 
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 
-from modalview.bounds.bands import BandCount, Cases, Counters, Edge, count_band_by
+from modalview.bounds.bands import BandCount, Cases, Counters, Edge, EdgeCount, count_band_by
 from modalview.resonance.results import Band, Check, Verdict
 from modalview.resonance.wording import band_text, modes_text
 
@@ -129,31 +129,40 @@ def _exactly(question: Question) -> str:
 
 def _nominal_only(question: Question, count: BandCount) -> Check:
     deciding, text = None, band_text(question.band)
+    more: tuple[EdgeCount, ...] = ()
     if count.possible is None:
         reason = f"rounding leaves undecided whether some values within tolerance reach {text}"
     else:
-        deciding, reach = _deciding_case(question, count)
+        deciding, reach, more = _deciding_case(question, count)
         reason = f"no mode lies in the band at nominal values, but {reach} {text}{_exactly(question)}"
-    return _check(question, count, Verdict.NOMINAL_ONLY, Verdict.NOMINAL_ONLY.value, reason, deciding)
+    found = _check(question, count, Verdict.NOMINAL_ONLY, Verdict.NOMINAL_ONLY.value, reason, deciding)
+    return replace(found, evidence=_once(found.evidence + more))
 
 
-def _deciding_case(question: Question, count: BandCount) -> tuple[str | None, str]:
-    """Return which case brings a mode into a band that is empty at nominal values, and what does in words.
+def _once(evidence: tuple[EdgeCount, ...]) -> tuple[EdgeCount, ...]:
+    """Return every count once, in the order made; the same edge may be asked for again."""
+    return tuple({(one.case, one.side, one.edge): one for one in reversed(evidence)}.values())[::-1]
+
+
+def _deciding_case(question: Question, count: BandCount) -> tuple[str | None, str, tuple[EdgeCount, ...]]:
+    """Return which case brings a mode into a band empty at nominal values, what does so in words, and counts.
 
     Soft-heavy brings modes down past the upper edge, stiff-light up past the lower one; the one that
     moves more where both do. None where the tolerance of the speed does so and no values do.
     """
     if question.tolerance == question.nominal:
-        return _case_of(count, count)
+        return *_case_of(count, count), ()
     values = count_band_by(question.counters, question.nominal, question.nominal)
     speed = question.counted_at_nominal()
+    counts = values.evidence + speed.evidence
     if values.possible:
         case, reach = _case_of(values, values)
-        return case, f"{reach} (and so does the tolerance of the speed alone)" if speed.inside else reach
+        also = " (and so does the tolerance of the speed alone)" if speed.inside else ""
+        return case, f"{reach}{also}", counts
     if speed.inside:
-        return None, "the tolerance of the speed alone reaches"
+        return None, "the tolerance of the speed alone reaches", counts
     case, _ = _case_of(count, speed)
-    return case, f"the {case} case together with the tolerance of the speed reaches"
+    return case, f"the {case} case together with the tolerance of the speed reaches", counts
 
 
 def _case_of(count: BandCount, nominal: BandCount) -> tuple[str, str]:

@@ -57,7 +57,7 @@ MENUS: dict[str, tuple[Item, ...]] = {
         Item("&Gershgorin bounds on the scale", "on_discs", None, checkable=True),
     ),
     "&Modes": (
-        Item("&Find modes", "on_find", "Ctrl+Return"),
+        Item("&Find modes", "on_find", "Ctrl+Enter"),
         Item("Find modes &automatically", "on_automatic", None, checkable=True),
         SEPARATOR,
         Item("&Next mode", "on_next_mode", "Ctrl+Right"),
@@ -103,7 +103,7 @@ class Menus:
         if item.key is not None:
             action.setShortcut(item.key)
         if item.do == "on_find":
-            action.setShortcuts(["Ctrl+Return", "Ctrl+Enter"])
+            action.setShortcuts(["Ctrl+Enter", "Ctrl+Return"])  # the first is the one shown
         if item.checkable:
             action.toggled.connect(do)
         else:

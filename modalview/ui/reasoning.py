@@ -168,6 +168,12 @@ def _numbers(check: Any) -> list[str]:
     low, high = check.band.nominal
     least, most = check.band.tolerance
     lines = [f"In the band as given: {_sum(found, ('nominal', high), ('nominal', low), check.inside)}."]
+    widened = _tolerated(found, ("nominal", most), ("nominal", least))
+    if (least, most) != (low, high) and widened:
+        lines.append(f"In the band widened by the speed tolerance, as given: {widened}.")
+    by_values = _tolerated(found, ("soft-heavy", high), ("stiff-light", low))
+    if (least, most) != (low, high) and by_values:
+        lines.append(f"At the speed as given, soft-heavy less stiff-light: {by_values}.")
     if any(case == "soft-heavy" for case, _, _ in found):
         possible = _sum(found, ("soft-heavy", most), ("stiff-light", least), check.possible)
         lines.append(f"At most, soft-heavy to the upper edge less stiff-light below the lower: {possible}.")
@@ -176,6 +182,14 @@ def _numbers(check: Any) -> list[str]:
             certain = _sum(found, ("stiff-light", high), ("soft-heavy", low), check.certain, inward=True)
             lines.append(f"At every value, stiff-light less soft-heavy: {certain}.")
     return lines
+
+
+def _tolerated(
+    found: dict[tuple[str, str, float], int | None], upper: tuple[str, float], lower: tuple[str, float]
+) -> str:
+    """Return the sum that tells which tolerance reaches the band; "" where it was not counted."""
+    one, other = found.get((upper[0], "at most", upper[1])), found.get((lower[0], "below", lower[1]))
+    return "" if one is None or other is None else f"{one} − {other} = {max(0, one - other)}"
 
 
 def _sum(

@@ -70,6 +70,22 @@ class TestNominalOnly:
         assert (found.verdict, found.deciding_case) == (Verdict.NOMINAL_ONLY, None)
         assert "but the tolerance of the speed alone reaches" in found.reason
 
+    def test_every_count_that_tells_which_tolerance_reaches_the_band_is_kept_once(self):
+        # Band 20 to 30 Hz, widened by the speed to 18 to 33 Hz; 34 Hz comes down to 34 sqrt(0.9) = 32.3 Hz.
+        found = check([(34, "10 %")], speed_tolerance="10 %")
+        made = [(e.case, e.side, round(e.edge / (2 * math.pi))) for e in found.evidence]
+        assert len(set(made)) == len(made)
+        assert set(made) == {
+            ("soft-heavy", "at most", 33),
+            ("stiff-light", "below", 18),
+            ("nominal", "at most", 30),
+            ("nominal", "below", 20),
+            ("soft-heavy", "at most", 30),
+            ("stiff-light", "below", 20),
+            ("nominal", "at most", 33),
+            ("nominal", "below", 18),
+        }
+
     def test_a_case_that_reaches_the_band_is_named_though_the_speed_tolerance_reaches_it_too(self):
         # 32 Hz lies in 18 to 33 Hz already, and soft it is 29.6 Hz: in 20 to 30 Hz without any of it.
         found = check([(32, "15 %")], speed_tolerance="10 %")

@@ -1,11 +1,15 @@
+from dataclasses import replace
+
 import pytest
 from conftest import PUMP, settle
 from PySide6.QtCore import Qt
 
+from modalview.model.values import Entry
 from modalview.places import demo_models
 from modalview.store import read_model
 from modalview.ui.reasoning import reasoning
 from modalview.ui.studydoor import load_study
+from modalview.units.quantities import RATIO, SPEED
 
 
 def known(model):
@@ -53,6 +57,21 @@ def test_the_deciding_case_is_named():
     (check,) = reasoning(*known(model)).checks
     assert check.verdict == "clear at nominal only"
     assert any(line.startswith("The stiff-light case decides") for line in check.proof)
+
+
+def test_counts_of_the_band_widened_by_the_speed_tolerance_are_told():
+    # The lowest mode at 51.26 Hz lies above the band of 40 Hz ± 15 %, but comes into it with both tolerances.
+    model = read_model(PUMP)
+    machine = model.machines[0]
+    slower = replace(
+        machine, speed=Entry.typed("2400 rpm", SPEED), speed_tolerance=Entry.typed("12 %", RATIO)
+    )
+    found = reasoning(*known(replace(model, machines=(slower,)))).checks
+    first = next(one for one in found if one.title.startswith("1×"))
+    assert first.verdict == "clear at nominal only"
+    assert any("In the band widened by the speed tolerance, as given: 1 − 0 = 1." in x for x in first.proof)
+    assert any("At the speed as given, soft-heavy less stiff-light: 1 − 0 = 1." in x for x in first.proof)
+    assert len(first.counts) == 8
 
 
 def test_what_was_not_checked_is_told_and_a_geared_order_names_its_gears():

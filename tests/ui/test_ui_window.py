@@ -19,6 +19,7 @@ from modalview.store import read_model
 from modalview.ui import settings as names
 from modalview.ui.dialogs import TextDialog
 from modalview.ui.examples import bundled_examples
+from modalview.ui.menus import keyboard_text
 
 BASE_SUPPORT = ("links", "k3", "stiffness")
 
@@ -115,6 +116,12 @@ def test_with_the_automatic_search_off_the_verdict_stands_without_modes(window, 
     assert window.banner.word.text() == "Mode in band"
     assert window.modes.row.modes.rowCount() == 0
     assert "Ctrl+Enter" in window.modes.invitation.text()
+
+
+def test_the_key_that_finds_modes_has_one_name_and_two_places(window):
+    assert "| Find modes | Ctrl+Enter |" in keyboard_text()
+    keys = [key.toString() for key in window.menus.actions["on_find"].shortcuts()]
+    assert keys == ["Ctrl+Enter", "Ctrl+Return"]  # the menu shows the first
 
 
 def test_a_chosen_mode_moves_on_the_sheet_and_frozen_it_stands_still(pump):
