@@ -13,7 +13,7 @@ from modalview.model.addresses import Address, field_named, look, put, shape_at
 from modalview.model.parts import Model
 from modalview.model.rules import faults
 from modalview.model.tolerance_text import tolerance_text, typed_entry, typed_tolerance
-from modalview.model.values import Entry, Tolerance, Value
+from modalview.model.values import STARTING, Entry, Tolerance, Value
 from modalview.units.show import short
 
 
@@ -82,8 +82,8 @@ def set_field(model: Model, address: Address, new: Any, text: str) -> SetField:
 def set_value_text(model: Model, address: Address, text: str) -> SetField:
     """Return the edit that types a value anew, by the window's rule (a decimal comma is accepted).
 
-    Tolerance, source and status of the value stay; ``by`` and ``given`` go, for the number no longer
-    comes from there. An empty text takes an optional value away.
+    Tolerance, source and status of the value stay, but for those of a starting value; ``by`` and ``given``
+    go, for the number no longer comes from there. An empty text takes an optional value away.
 
     Raises
     ------
@@ -107,12 +107,20 @@ def set_value_text(model: Model, address: Address, text: str) -> SetField:
     if not text.strip():
         return set_field(model, address, _emptied(model, address), f"Clear {_named(address)}")
     entry = typed_entry(text, quantity)
-    new: Entry | Value = entry
-    if isinstance(old, Value):
-        new = old if entry == old.entry else replace(old, entry=entry, by=None, given=None)
-    elif shape.value:
-        new = Value(entry)
+    new = retyped(old if isinstance(old, Value) else None, entry) if shape.value else entry
     return set_field(model, address, new, f"Set {_named(address)} to {entry.text}")
+
+
+def retyped(old: Value | None, entry: Entry) -> Value:
+    """Return a value with another number, and what is still true of it.
+
+    Typing over a starting value gives it, even with the same number: it no longer counts as not given yet.
+    """
+    if old is None:
+        return Value(entry)
+    if old.source == STARTING:
+        return replace(old, entry=entry, source=None, status=None, by=None, given=None)
+    return old if entry == old.entry else replace(old, entry=entry, by=None, given=None)
 
 
 def set_tolerance_text(model: Model, address: Address, text: str) -> SetField:
@@ -136,7 +144,7 @@ def set_tolerance_text(model: Model, address: Address, text: str) -> SetField:
 
 def set_number_text(model: Model, address: Address, text: str) -> SetField:
     """Return the edit that types a plain number, such as an order; a decimal comma is accepted."""
-    number = _number(text)
+    number = typed_number(text)
     if number is None:
         raise UnitError(
             f'"{text}" cannot be read as a number for {_named(address)}: write it like "7" or "0.5"'
@@ -144,7 +152,8 @@ def set_number_text(model: Model, address: Address, text: str) -> SetField:
     return set_field(model, address, number, f"Set {_named(address)} to {short(number)}")
 
 
-def _number(text: str) -> float | None:
+def typed_number(text: str) -> float | None:
+    """Read a plain finite number, with a decimal comma where one is meant; None when it is none."""
     plain = text.strip().replace("\u2212", "-").replace(",", ".")
     try:
         number = float(plain)
@@ -171,7 +180,7 @@ def set_typed(model: Model, address: Address, text: str) -> SetField:
     if shape.tolerance:
         return set_tolerance_text(model, address, text)
     # A gear's ratio is a number, or a fraction as text.
-    if shape.number and text.strip() and not (shape.text and _number(text) is None):
+    if shape.number and text.strip() and not (shape.text and typed_number(text) is None):
         return set_number_text(model, address, text)
     if shape.text or shape.number:
         return set_plain_text(model, address, text)
