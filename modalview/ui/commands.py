@@ -5,6 +5,7 @@ from typing import TYPE_CHECKING
 
 from PySide6.QtGui import QUndoCommand
 
+from modalview.model.differences import Rewrite, joined
 from modalview.model.edits import Edit
 from modalview.model.parts import Model
 
@@ -33,12 +34,26 @@ class Together:
 
 
 class EditCommand(QUndoCommand):
-    """Applies and reverts one edit."""
+    """Applies and reverts one edit; takes in one that goes on with it."""
 
     def __init__(self, edit: Edit, document: "Document") -> None:
         super().__init__(edit.text)
         self._edit = edit
         self._document = document
+
+    def id(self) -> int:
+        """Return the mark of commands that may be taken in; -1 for those that never are."""
+        return -1 if getattr(self._edit, "merge", None) is None else 1
+
+    def mergeWith(self, other: QUndoCommand) -> bool:  # noqa: N802  (Qt's name)
+        """Take in the next command where it goes on with this one: nudges of the same parts."""
+        if not isinstance(other, EditCommand) or self._document.model is None:
+            return False
+        first, second = self._edit, other._edit  # noqa: SLF001  (of its own class)
+        if not isinstance(first, Rewrite) or not isinstance(second, Rewrite) or first.merge != second.merge:
+            return False
+        self._edit = joined(first, second, self._document.model)
+        return True
 
     def redo(self) -> None:
         """Apply."""

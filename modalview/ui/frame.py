@@ -5,6 +5,7 @@ from typing import Any
 from PySide6.QtGui import QFontMetrics, QResizeEvent
 from PySide6.QtWidgets import (
     QApplication,
+    QHBoxLayout,
     QMainWindow,
     QStackedWidget,
     QStyle,
@@ -33,6 +34,7 @@ from modalview.ui.scale import ScalePanel
 from modalview.ui.settings import Setting, Settings, settings_text
 from modalview.ui.settingsdialog import SettingsDialog
 from modalview.ui.sheet import Sheet
+from modalview.ui.sketch.palette import Palette
 from modalview.ui.status import StatusLine
 from modalview.ui.swing import FULL_TURN, Swing
 from modalview.ui.theme import apply_theme
@@ -61,6 +63,7 @@ class Frame(QMainWindow):
         self.swing = Swing(self)
         self.banner = Banner(self)
         self.sheet = Sheet(self.swing, self)
+        self.palette_of_tools = Palette(self)
         self.play_bar = PlayBar(self.swing, self)
         self.scale = ScalePanel(self)
         self.results = Results(self.document, self.analysis, self)
@@ -103,7 +106,11 @@ class Frame(QMainWindow):
         layout = QVBoxLayout(above)
         layout.setContentsMargins(0, 0, 0, 4)
         layout.setSpacing(0)
-        layout.addWidget(self.sheet, 1)
+        row = QHBoxLayout()
+        row.setSpacing(0)
+        row.addWidget(self.palette_of_tools)
+        row.addWidget(self.sheet, 1)
+        layout.addLayout(row, 1)
         layout.addWidget(self.play_bar)
         return above
 
@@ -147,6 +154,7 @@ class Frame(QMainWindow):
         self.results.set_theme(theme)
         self.parts.lines.set_theme(theme)
         self.parts.fit_columns()
+        self.palette_of_tools.set_theme(theme)
         self.play_bar.set_theme(theme)
         self.welcome.set_theme(theme)
         self.arrange()

@@ -30,7 +30,7 @@ _PAN_STEP_PX = 40
 class Sheet(QWidget):
     """Paints cached pictures of the model; a frame of the moving mode only adds what moves."""
 
-    part_chosen = Signal(str)
+    laid_out = Signal()
 
     def __init__(self, swing: Swing, parent: QWidget | None = None) -> None:
         super().__init__(parent)
@@ -41,6 +41,7 @@ class Sheet(QWidget):
         self._title: Any = None
         self._mode: Any = None
         self._posed: Any = None
+        self._still = False
         self._rest: QPixmap | None = None
         self._theme: Theme = LIGHT
         self._text_scale = 1.0
@@ -55,11 +56,13 @@ class Sheet(QWidget):
         self._later.timeout.connect(self._rebuild)
         self._background = Later(self)
         self._background.done.connect(self._show_geometry)
+        self.hand: Any = None  # ui.sketch.hand.Hand, which draws on the sheet
         self._drag: QPoint | None = None
         self._space = False
         self.setMinimumSize(320, 200)
         self.setSizePolicy(QSizePolicy.Policy.Expanding, QSizePolicy.Policy.Expanding)
         self.setFocusPolicy(Qt.FocusPolicy.StrongFocus)
+        self.setMouseTracking(True)
         self.setAccessibleName("Sheet with the drawing of the model")
 
     # What is shown
@@ -83,6 +86,17 @@ class Sheet(QWidget):
         """Lay an edited model out now that its verdict is known."""
         if self._later.isActive():
             self._later.start(SOON_MS)
+
+    def draw_now(self) -> None:
+        """Lay an edited model out at once, for the hand that draws it."""
+        if self._later.isActive():
+            self._rebuild()
+
+    def hold_still(self, *, still: bool) -> None:
+        """Show the model at rest while somebody draws on it, whatever mode was chosen."""
+        if still != self._still:
+            self._still = still
+            self._pose()
 
     def show_title(self, title: Any) -> None:
         """Fill the title block (drawing.furniture.TitleLines)."""
@@ -117,6 +131,16 @@ class Sheet(QWidget):
             self._selected = part
             self._rest = None
             self.update()
+
+    @property
+    def geometry(self) -> Any:
+        """What is laid out (drawing.geometry.SheetGeometry), or None."""
+        return self._geometry
+
+    def hold_view(self) -> None:
+        """Keep scale and place from now on, whatever is drawn or edited."""
+        if self._view is None and self._geometry is not None:
+            self._view = self._geometry.view
 
     def fit(self) -> None:
         """Show the whole model."""
@@ -162,6 +186,7 @@ class Sheet(QWidget):
     def _show_geometry(self, _key: str, geometry: Any) -> None:
         self._geometry = geometry
         self._pose()
+        self.laid_out.emit()
 
     def close_threads(self) -> None:
         """Wait for a layout under way."""
@@ -169,7 +194,7 @@ class Sheet(QWidget):
 
     def _pose(self) -> None:
         self._rest = self._posed = None
-        fits = self._geometry is not None and self._mode is not None
+        fits = self._geometry is not None and self._mode is not None and not self._still
         if fits and len(self._mode.motion) == len(self._geometry.model.bodies):
             from modalview.drawing import motion  # noqa: PLC0415  (see above)
 
@@ -210,6 +235,11 @@ class Sheet(QWidget):
         painter.drawPixmap(0, 0, self._rest)
         if self._posed is not None:
             paint_drawing(painter, self.moving_drawing(), self._theme)
+        if self.hand is not None and (items := self.hand.items()):
+            from modalview.drawing import sheet  # noqa: PLC0415  (numpy comes after the first paint)
+
+            over = sheet.sheet_of(items, self.width(), self.height(), self._text_scale)
+            paint_drawing(painter, over, self._theme)
 
     def moving_drawing(self) -> Any:
         """Return the frame of this moment: moving, or frozen with arrows."""
@@ -251,16 +281,13 @@ class Sheet(QWidget):
         if middle or (self._space and event.button() == Qt.MouseButton.LeftButton):
             self._drag = event.position().toPoint()
             self.setCursor(Qt.CursorShape.ClosedHandCursor)
-        elif event.button() == Qt.MouseButton.LeftButton and self._geometry is not None:
-            self._choose(event.position())
+        elif event.button() == Qt.MouseButton.LeftButton and self.hand is not None:
+            self.hand.press(event)
 
-    def _choose(self, at: QPointF) -> None:
-        from modalview.drawing import sheet  # noqa: PLC0415  (see above)
-
-        part = sheet.part_at(self._geometry, at.x(), at.y())
-        self.select(part)
-        if part is not None:
-            self.part_chosen.emit(part)
+    def mouseDoubleClickEvent(self, event: QMouseEvent) -> None:  # noqa: N802  (Qt's name)
+        """Two clicks on a part."""
+        if event.button() == Qt.MouseButton.LeftButton and self.hand is not None:
+            self.hand.double_click(event)
 
     def mouseMoveEvent(self, event: QMouseEvent) -> None:  # noqa: N802  (Qt's name)
         """Pan."""
@@ -268,15 +295,24 @@ class Sheet(QWidget):
             step = event.position().toPoint() - self._drag
             self._drag = event.position().toPoint()
             self.pan(step.x(), step.y())
+        elif self.hand is not None:
+            self.hand.move(event)
 
     def mouseReleaseEvent(self, event: QMouseEvent) -> None:  # noqa: N802  (Qt's name)
-        """End of panning."""
-        del event
-        self._drag = None
-        self.unsetCursor()
+        """End of panning, or of what the hand does."""
+        if self._drag is not None:
+            self._drag = None
+            self.unsetCursor()
+        elif self.hand is not None and event.button() == Qt.MouseButton.LeftButton:
+            self.hand.release(event)
 
     def keyPressEvent(self, event: QKeyEvent) -> None:  # noqa: N802  (Qt's name)
-        """Pan by arrows, zoom by plus and minus; Space held makes the left button pan."""
+        """Let the hand do what it knows; else pan by arrows, zoom by plus and minus.
+
+        Space held makes the left button pan.
+        """
+        if self.hand is not None and self.hand.key(event):
+            return
         steps = {
             Qt.Key.Key_Left: (_PAN_STEP_PX, 0),
             Qt.Key.Key_Right: (-_PAN_STEP_PX, 0),

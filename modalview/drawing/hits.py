@@ -1,0 +1,127 @@
+"""What lies under a pointer on the sheet: parts, and the handles of what is chosen."""
+
+from dataclasses import dataclass
+
+import numpy as np
+
+from modalview.drawing.geometry import SheetGeometry
+from modalview.drawing.layout import GROUND
+from modalview.drawing.primitives import Floats
+
+HANDLE = 7.0  # pixels from a handle's middle within which it is hit
+# Handles of a body by compass point: across (-1, 0, 1) and up.
+CORNERS = {
+    "nw": (-1, -1),
+    "n": (0, -1),
+    "ne": (1, -1),
+    "e": (1, 0),
+    "se": (1, 1),
+    "s": (0, 1),
+    "sw": (-1, 1),
+    "w": (-1, 0),
+}
+
+
+@dataclass(frozen=True, slots=True)
+class Handle:
+    """A handle of the one part that is chosen.
+
+    Parameters
+    ----------
+    part : str
+    name : str
+        A compass point of a body, or "from" or "to" of a link.
+    x, y : float
+        Pixels.
+    """
+
+    part: str
+    name: str
+    x: float
+    y: float
+
+
+def handles(geometry: SheetGeometry, chosen: tuple[str, ...]) -> tuple[Handle, ...]:
+    """Return the handles of what is chosen: only a single body or link has any."""
+    if len(chosen) != 1:
+        return ()
+    for number, body in enumerate(geometry.model.bodies):
+        if body.id == chosen[0]:
+            x1, y1, x2, y2 = geometry.boxes[number].tolist()
+            cx, cy, hx, hy = (x1 + x2) / 2, (y1 + y2) / 2, (x2 - x1) / 2, (y2 - y1) / 2
+            return tuple(
+                Handle(body.id, name, cx + across * (hx + 5), cy + up * (hy + 5))
+                for name, (across, up) in CORNERS.items()
+            )
+    for number, link in enumerate(geometry.model.links):
+        if link.id == chosen[0]:
+            ends = geometry.link_ends[number].tolist()
+            return tuple(Handle(link.id, name, *end) for name, end in zip(("from", "to"), ends, strict=True))
+    return ()
+
+
+def handle_at(geometry: SheetGeometry, chosen: tuple[str, ...], x: float, y: float) -> Handle | None:
+    """Return the handle under a pointer, or None."""
+    near = [one for one in handles(geometry, chosen) if abs(one.x - x) <= HANDLE and abs(one.y - y) <= HANDLE]
+    return min(near, key=lambda one: abs(one.x - x) + abs(one.y - y), default=None)
+
+
+def body_at(geometry: SheetGeometry, x: float, y: float, around: float = 6.0) -> int | None:
+    """Return the number of the smallest body under a pointer, or within some pixels of it."""
+    here = np.array([x, y])
+    inside = ((geometry.boxes[:, :2] - around <= here) & (here <= geometry.boxes[:, 2:] + around)).all(axis=1)
+    if not inside.any():
+        return None
+    sizes = np.prod(geometry.boxes[:, 2:] - geometry.boxes[:, :2], axis=1)
+    return int(np.argmin(np.where(inside, sizes, np.inf)))
+
+
+def foot_at(geometry: SheetGeometry, x: float, y: float, around: float = 12.0) -> str | None:
+    """Return the id of the support whose ground is under a pointer, or None."""
+    if not len(geometry.link_ends):
+        return None
+    rows, sides = np.nonzero(geometry.link_bodies == GROUND)
+    if not len(rows):
+        return None
+    off = np.hypot(*(geometry.link_ends[rows, sides] - np.array([x, y])).T)
+    best = int(np.argmin(off))
+    if off[best] > around:
+        return None
+    link = geometry.model.links[int(rows[best])]
+    return (link.from_, link.to)[int(sides[best])].support
+
+
+def within(geometry: SheetGeometry, band: tuple[float, float, float, float]) -> tuple[str, ...]:
+    """Return the ids of bodies and links that lie wholly inside x1, y1, x2, y2, and of their supports."""
+    x1, x2 = sorted((band[0], band[2]))
+    y1, y2 = sorted((band[1], band[3]))
+    low, high = np.array([x1, y1]), np.array([x2, y2])
+    boxes = geometry.boxes
+    found = np.flatnonzero(np.all((boxes[:, :2] >= low) & (boxes[:, 2:] <= high), axis=1))
+    ids = [geometry.model.bodies[number].id for number in found.tolist()]
+    if len(geometry.link_ends):
+        inside = np.all((geometry.link_ends >= low) & (geometry.link_ends <= high), axis=(1, 2))
+        for number in np.flatnonzero(inside).tolist():
+            link = geometry.model.links[number]
+            ids.append(link.id)
+            ids += [end.support for end in (link.from_, link.to) if end.support is not None]
+    return tuple(dict.fromkeys(ids))
+
+
+def frame_of(geometry: SheetGeometry, part: str) -> Floats | None:
+    """Return x1, y1, x2, y2 about a body, link or support on the sheet; None where it is not drawn."""
+    for number, body in enumerate(geometry.model.bodies):
+        if body.id == part:
+            return np.asarray(geometry.boxes[number])
+    found = []
+    for number, link in enumerate(geometry.model.links):
+        ends = geometry.link_ends[number]
+        if link.id == part:
+            return np.concatenate([ends.min(axis=0) - 8.0, ends.max(axis=0) + 8.0])
+        for side, end in enumerate((link.from_, link.to)):
+            if end.support == part:
+                found.append(ends[side])
+    if not found:
+        return None
+    feet = np.array(found)
+    return np.asarray(np.hstack([feet.min(axis=0), feet.max(axis=0)]) + np.array([-22.0, -4.0, 22.0, 14.0]))

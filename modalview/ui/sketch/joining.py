@@ -1,0 +1,152 @@
+"""Links: pressed on one part and let go on another, or on empty ground; two clicks do as well."""
+
+from dataclasses import dataclass
+from typing import Any
+
+from modalview.errors import InputError
+from modalview.model.adding import add_link, add_support, end_at
+from modalview.model.parts import End, Model, Motion
+from modalview.ui.sketch.tool import Pointer, Tool
+
+# Links between two bodies, never to the ground.
+OF_BODIES = ("gear", "rigid link")
+
+
+@dataclass(frozen=True, slots=True, eq=False)
+class Grip:
+    """Where an end of a link would be.
+
+    Parameters
+    ----------
+    body, support : str or None
+        What it would be on; neither is new ground.
+    at : drawing.snap.Snapped
+    """
+
+    body: str | None
+    support: str | None
+    at: Any
+
+
+class Join(Tool):
+    """Makes a link of one kind."""
+
+    def __init__(self, hand: Any, kind: str) -> None:
+        super().__init__(hand)
+        self._kind = kind
+        self._from: Grip | None = None
+        self._to: Grip | None = None
+        self._pressed: Pointer | None = None
+        self._waits = False  # the first end was a click: the next click is the other end
+
+    @property
+    def busy(self) -> bool:
+        """Whether one end is made and the other not."""
+        return self._from is not None
+
+    def hover(self, at: Pointer) -> None:
+        """Show what an end would be on."""
+        self._to = self.grip(at)
+
+    def press(self, at: Pointer) -> None:
+        """Make the first end, or show the second where the first waits."""
+        self._to = self.grip(at)
+        if not self._waits:
+            self._from = self._to
+            self._pressed = at
+
+    def drag(self, at: Pointer) -> None:
+        """Lead the link."""
+        self._to = self.grip(at)
+
+    def release(self, at: Pointer) -> None:
+        """Make the link; a click alone waits for the other end."""
+        self._to = self.grip(at)
+        if not self._waits and self._pressed is not None and not at.far(self._pressed):
+            self._waits = True
+            return
+        why = self._why_not()
+        if why:
+            self.hand.say(why)
+            if not self._waits:
+                self.cancel()
+            return
+        start, stop = self._from, self._to
+        self.cancel()
+        self.hand.make(lambda model: self._made(model, start, stop), f"Draw {self._kind}")
+
+    def cancel(self) -> bool:
+        """Leave the link off."""
+        was = self.busy
+        self._from, self._pressed, self._waits = None, None, False
+        return was
+
+    def grip(self, at: Pointer) -> Grip:
+        """Return where an end would be."""
+        body = self.hand.body_under(at)
+        start = self._from.at if self._from is not None and at.straight else None
+        snapped = self.hand.snap(at, start=(start.x, start.y) if start is not None else None)
+        if body is None:  # drawn to a part from close by
+            body = self.hand.body_under(Pointer(snapped.x, snapped.y))
+        support = None if body is not None else self.hand.foot_under(at)
+        return Grip(body, support, snapped)
+
+    def _why_not(self) -> str:
+        start, stop = self._from, self._to
+        if start is None or stop is None:
+            return "a link has two ends"
+        if start.body is None and stop.body is None:
+            return f"a {self._kind} needs a body that moves at one end"
+        if start.body is not None and start.body == stop.body:
+            return f"both ends are on {self.hand.name_of(start.body)}; lead the {self._kind} to another part"
+        if self._kind in OF_BODIES and (start.body is None or stop.body is None):
+            return f"a {self._kind} joins two bodies; the ground is not one"
+        return ""
+
+    def _made(self, model: Model, start: Grip | None, stop: Grip | None) -> tuple[Model, str]:
+        if start is None or stop is None:
+            raise InputError("a link has two ends")
+        model, one = self.end(model, start)
+        model, other = self.end(model, stop)
+        return add_link(model, self._kind, one, other, drag=self.hand.place(stop.at.world - start.at.world))
+
+    def end(self, model: Model, grip: Grip) -> tuple[Model, End]:
+        """Return the model, with a new support where one is needed, and the end there."""
+        if grip.body is not None:
+            if model.motion is Motion.SHAFT_TRAIN:
+                return model, End(body=grip.body)
+            return model, end_at(model, grip.body, self.hand.place(grip.at.world))
+        if grip.support is not None:
+            return model, End(support=grip.support)
+        model, support = add_support(model, self.hand.place(grip.at.world))
+        return model, End(support=support)
+
+    def notes(self) -> tuple[str, ...]:
+        """Return what an end would be on, or why it cannot be there."""
+        if self._to is None:
+            return ()
+        if self._from is not None and (why := self._why_not()):
+            return (why,)
+        where = "ground" if self._to.body is None else self.hand.name_of(self._to.body)
+        snapped = self._to.at.what
+        return (where, snapped) if snapped not in ("", "grid", where) else (where,)
+
+    def items(self) -> tuple[Any, ...]:
+        """Return the link to be, what it would be joined to, and alignments."""
+        from modalview.drawing import overlay  # noqa: PLC0415  (numpy comes after the first paint)
+
+        if self._to is None:
+            return ()
+        items: tuple[Any, ...] = ()
+        for grip in (self._from, self._to):
+            if grip is not None and grip.body is not None:
+                items += (
+                    *overlay.target_items(self.hand.box_of(grip.body)),
+                    *overlay.grip_items(grip.at.x, grip.at.y),
+                )
+        if self._from is None:
+            return *items, *overlay.hint_items(self._to.at)
+        on_ground = self._to.body is None and self._kind not in OF_BODIES
+        start, stop = (self._from.at.x, self._from.at.y), (self._to.at.x, self._to.at.y)
+        link = overlay.link_items(self._kind, start, stop, on_ground=on_ground)
+        return *items, *link, *overlay.hint_items(self._to.at)

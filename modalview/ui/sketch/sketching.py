@@ -1,0 +1,84 @@
+"""Puts hand, palette, numbers and forms into the window and passes on what each tells."""
+
+from typing import Any
+
+from PySide6.QtCore import QObject
+
+from modalview.ui.sketch.hand import Hand
+from modalview.ui.sketch.numbers import NumberEntry
+
+_TOLD_MS = 12_000
+
+
+class Sketching(QObject):
+    """Everything that draws and edits on the sheet of one window."""
+
+    def __init__(self, window: Any) -> None:
+        super().__init__(window)
+        self._window = window
+        self.hand = Hand(window.document, window.sheet)
+        window.sheet.hand = self.hand
+        self.palette = window.palette_of_tools
+        self.numbers = NumberEntry(self.hand, window.sheet)
+        self._awaited: tuple[tuple[str, ...], bool] | None = None  # parts whose form waits for the sheet
+        self._connect()
+
+    def _connect(self) -> None:
+        window, hand = self._window, self.hand
+        self.palette.tool_taken.connect(self._on_tool_taken)
+        hand.tool_changed.connect(self._on_tool_changed)
+        hand.told.connect(lambda words: window.statusBar().showMessage(words, _TOLD_MS))
+        hand.number_begun.connect(self.numbers.begin)
+        hand.chosen_changed.connect(self._on_chosen_changed)
+        hand.drawn.connect(lambda part: self._ask_values((part,), fresh=True))
+        hand.form_asked.connect(lambda parts: self._ask_values(parts, fresh=False))
+        window.parts.part_chosen.connect(self._on_part_of_table)
+        window.sheet.laid_out.connect(self._on_laid_out)
+        window.document.model_changed.connect(self._on_model_changed)
+        window.document.opened.connect(self._on_opened)
+
+    def _on_tool_taken(self, name: str, keep: bool) -> None:  # noqa: FBT001  (a slot)
+        self.hand.take(name, locked=keep)
+        self._window.sheet.setFocus()
+
+    def _on_tool_changed(self, name: str) -> None:
+        self.palette.show_tool(name)
+        self._hold_still()
+
+    def _hold_still(self) -> None:
+        """Let no mode move under the hand while it draws."""
+        self._window.sheet.hold_still(still=self.hand.kind.name != "choose" or self.hand.at_work)
+
+    def _on_chosen_changed(self, parts: tuple[str, ...]) -> None:
+        if parts:
+            table = self._window.parts
+            kept = table.blockSignals(True)  # what was chosen here needs not be chosen again
+            table.choose_part(parts[0])
+            table.blockSignals(kept)
+
+    def _on_part_of_table(self, part: str) -> None:
+        if self.hand.part(part) is not None:
+            self.hand.choose((part,))
+
+    def _on_model_changed(self) -> None:
+        self.palette.show_motion(self._window.document.model.motion)
+        self.hand.forget_gone()
+        self._hold_still()
+        self._window.sheet.draw_now()
+
+    def _on_opened(self) -> None:
+        self.hand.choose(())
+        self.hand.take("choose")
+        self.palette.show_motion(self._window.document.model.motion)
+
+    # Values beside a part
+
+    def _ask_values(self, parts: tuple[str, ...], *, fresh: bool) -> None:
+        self._awaited = parts, fresh
+        if self.hand.geometry.model is self._window.document.model:
+            self._on_laid_out()
+
+    def _on_laid_out(self) -> None:
+        if self._awaited is None or self.hand.geometry.model is not self._window.document.model:
+            return
+        self._awaited = None
