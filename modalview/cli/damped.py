@@ -3,6 +3,7 @@
 from typing import Any
 
 from modalview.cli.table import table
+from modalview.cli.texts import wrapped_lines
 from modalview.study.damped import DampedMode, DampedSolution
 from modalview.units.show import shown_digits, significant
 
@@ -10,10 +11,7 @@ from modalview.units.show import shown_digits, significant
 def damped_text(found: DampedSolution) -> str:
     """Return a table of the damped modes with its evidence; empty where nothing damps."""
     parts = [_table(found)] if found.modes else []
-    if found.evidence:
-        parts.append("\n".join(found.evidence))
-    if found.notes:
-        parts.append("\n".join(found.notes))
+    parts += [wrapped_lines(texts) for texts in (found.evidence, found.notes) if texts]
     return "\n\n".join(parts)
 
 

@@ -9,7 +9,7 @@ from modalview.bounds.before import to_hz
 from modalview.bounds.discs import Group
 from modalview.cli.cautions import CAUTION
 from modalview.cli.printing import one_line
-from modalview.cli.table import table
+from modalview.cli.table import WIDTH, table
 from modalview.resonance.results import Check, Drive
 from modalview.resonance.wording import band_text, hz_range, percent
 from modalview.study import FoundMode, MatrixOutlook, MatrixSolution, Outlook, Share, Solution
@@ -18,7 +18,6 @@ from modalview.units.show import shown_digits, significant
 FORMULA = "separation = (natural frequency - excitation frequency) / excitation frequency"
 WORST = "worst: over all tolerances, 0 once the range overlaps the excitation"
 MOST_SHARES = 3
-WIDTH = 100
 
 
 def bounds_text(outlook: Outlook | MatrixOutlook) -> str:
@@ -42,7 +41,7 @@ def bounds_text(outlook: Outlook | MatrixOutlook) -> str:
         ]
         parts.append(table([head, *rows], right=frozenset({2, 3, 4})))
     parts += [_separated(bounds.separated)] if bounds.separated else []
-    parts += [_wrapped(outlook.sentence), _lines(bounds.notes)]
+    parts += [_wrapped(outlook.sentence), wrapped_lines(bounds.notes)]
     return "\n\n".join(parts + _tail(outlook))
 
 
@@ -74,7 +73,7 @@ def modes_text(solution: Solution | MatrixSolution, more: str = "") -> str:
         )
         if found
     ]
-    parts += [text for text in (_lines(solution.evidence), more) if text]
+    parts += [text for text in (wrapped_lines(solution.evidence), more) if text]
     return "\n\n".join(parts + _tail(solution.outlook))
 
 
@@ -147,7 +146,8 @@ def _wrapped(text: str, indent: str = "") -> str:
     return fill(text, WIDTH, subsequent_indent=indent, break_long_words=False, break_on_hyphens=False)
 
 
-def _lines(texts: Iterable[str]) -> str:
+def wrapped_lines(texts: Iterable[str]) -> str:
+    """Return texts one below the other, none wider than a page."""
     return "\n".join(_wrapped(text, "  ") for text in texts)
 
 

@@ -10,7 +10,7 @@ from typing import Any
 
 from modalview.model.parts import Machine, Model, SpeedRange
 from modalview.ui.checkcard import signed_percent
-from modalview.units.show import significant
+from modalview.units.show import short, significant
 
 _TURN = 6.283185307179586  # rad of one turn
 _RPM = _TURN / 60
@@ -129,10 +129,10 @@ def _source(machine: Machine, band: Any) -> str:
         return f"Fixed frequency: {found}."
     speed = machine.speed
     ends = (speed.from_, speed.to) if isinstance(speed, SpeedRange) else (speed,)
-    rpm = " to ".join(f"{end.si / _RPM:.6g}" for end in ends if end is not None)
+    rpm = " to ".join(f"{short(end.si / _RPM)}" for end in ends if end is not None)
     ratio = low / (band.order * ends[0].si) if ends[0] is not None else 1.0
     geared = "" if abs(ratio - 1) < 1e-9 else f" × {significant(ratio, 4)} (through gears)"
-    return f"Excitation: order {band.order:g} × {rpm} rpm{geared} / 60 = {found}."
+    return f"Excitation: order {short(band.order)} × {rpm} rpm{geared} / 60 = {found}."
 
 
 def _place(edge: Any) -> tuple[int, float]:
@@ -224,7 +224,7 @@ def _edges(check: Any) -> str:
         for edge in check.evidence
         if not isinstance(edge.edge, Fraction) and edge.count.edge
     ]
-    share = f" by at most {max(moved) / 2:.0e} of the frequency" if moved else ""
+    share = f" by at most {short(max(moved) / 2, 1)} of the frequency" if moved else ""
     return (
         f"Counts of pivots below zero (Sylvester); edges moved outward{share}, further than rounding reaches."
     )
@@ -266,7 +266,7 @@ def _reached(share: float) -> str:
 def _drive(check: Any) -> tuple[str, ...]:
     lines = []
     for one in check.drives:
-        share = "" if one.share is None else f" (it takes {100 * one.share:.2g} % of the force)"
+        share = "" if one.share is None else f" (it takes {short(100 * one.share, 2)} % of the force)"
         word = str(one.drive)
         said = {"unknown": "no point of action is given, so how strongly it is driven is not known"}.get(
             word, word
