@@ -8,6 +8,7 @@ from 0, as in JSON: ``links[2] "M3" . from``.
 """
 
 import os
+from collections.abc import Callable
 from pathlib import Path
 from typing import Any
 
@@ -15,7 +16,7 @@ from modalview.errors import Fault, FileAccessError, FileFaultsError
 from modalview.model import rules
 from modalview.model.parts import FREEDOMS, Model, Motion
 from modalview.store.json_text import JsonMap, decode
-from modalview.store.walk import Walk, shown
+from modalview.store.walk import Walk, never, shown
 
 FORMAT = "keepclear"
 VERSION = 1
@@ -58,32 +59,35 @@ def read_bytes(path: str | os.PathLike[str]) -> bytes:
     return data
 
 
-def parse_bytes(data: bytes) -> Model:
+def parse_bytes(data: bytes, *, stopped: Callable[[], bool] = never) -> Model:
     """Read a model from the bytes of a file."""
     try:
         text = data.decode("utf-8-sig")
     except UnicodeDecodeError as fault:
         reason = "the file is not UTF-8 text; if it is a model, save it as UTF-8"
         raise FileFaultsError((Fault(f"byte {fault.start}", reason),)) from None
-    return parse_model(text)
+    return parse_model(text, stopped=stopped)
 
 
-def parse_model(text: str) -> Model:
+def parse_model(text: str, *, stopped: Callable[[], bool] = never) -> Model:
     """Read a model from the text of a file.
+
+    Parameters
+    ----------
+    text : str
+    stopped : callable
+        Asked at every part whether the reading was called off.
 
     Raises
     ------
     FileFaultsError
         With all faults at once: those of form and, as far as parts could be read, those of meaning.
+    CancelledError
+        It was called off.
     """
-    tree = decode(text.removeprefix("\ufeff"))
-    if not isinstance(tree, JsonMap):
-        raise FileFaultsError((Fault("", f"a model file is one JSON object {{...}}; found {shown(tree)}"),))
-    _check_header(tree)
-    motion = _motion(tree)
-    _check_size(tree, motion)
-    walk = Walk(motion)
-    model = walk.record(Model, tree, "", besides=("format", "version"))
+    tree = _tree(text)
+    _check_size(tree, _motion(tree))
+    model, walk = _walked(tree, stopped)
     if "motion" not in tree:
         walk.fault("motion", f"is missing: say how the bodies move, {_motions()}")
     faults = walk.faults
@@ -92,8 +96,39 @@ def parse_model(text: str) -> Model:
         faults = faults + [fault for fault in rules.faults(model) if not _covered(fault.path, walk.spoiled)]
     if faults:
         raise FileFaultsError(_shortened(faults))
-    checked: Model = model
-    return checked
+    return model
+
+
+def parse_unchecked(text: str) -> tuple[Model, tuple[Fault, ...]]:
+    """Read a model that may break any rule of meaning, as one is while it is being drawn.
+
+    Returns
+    -------
+    model : Model
+        With blanks where a form is broken.
+    faults : tuple of Fault
+        Those of form alone; none for whatever `dump_model` wrote of a model made in the program.
+
+    Raises
+    ------
+    FileFaultsError
+        It is no model at all, or one of a later version.
+    """
+    model, walk = _walked(_tree(text))
+    return model, tuple(walk.faults)
+
+
+def _tree(text: str) -> JsonMap:
+    tree = decode(text.removeprefix("\ufeff"))
+    if not isinstance(tree, JsonMap):
+        raise FileFaultsError((Fault("", f"a model file is one JSON object {{...}}; found {shown(tree)}"),))
+    _check_header(tree)
+    return tree
+
+
+def _walked(tree: JsonMap, stopped: Callable[[], bool] = never) -> tuple[Model, Walk]:
+    walk = Walk(_motion(tree), stopped)
+    return walk.record(Model, tree, "", besides=("format", "version")), walk
 
 
 def _shortened(faults: list[Fault]) -> tuple[Fault, ...]:
