@@ -4,6 +4,7 @@ import hashlib
 import os
 import secrets
 import shutil
+from collections.abc import Callable
 from contextlib import suppress
 from dataclasses import dataclass
 from pathlib import Path
@@ -12,6 +13,7 @@ from typing import BinaryIO
 from modalview.errors import FileAccessError, FileChangedError, FileFaultsError, ModelFaultsError
 from modalview.model.parts import Model
 from modalview.store.reading import parse_bytes, read_bytes
+from modalview.store.walk import never
 from modalview.store.writing import dump_model
 
 BACKUP_SUFFIX = ".bak"
@@ -45,10 +47,12 @@ def stamp(path: str | os.PathLike[str]) -> FileStamp:
     return _stamp(Path(path), read_bytes(path))
 
 
-def open_model(path: str | os.PathLike[str]) -> tuple[Model, FileStamp]:
-    """Read a model and the stamp of exactly the bytes it was read from."""
+def open_model(
+    path: str | os.PathLike[str], *, stopped: Callable[[], bool] = never
+) -> tuple[Model, FileStamp]:
+    """Read a model and the stamp of exactly the bytes it was read from; CancelledError when called off."""
     data = read_bytes(path)
-    return parse_bytes(data), _stamp(Path(path), data)
+    return parse_bytes(data, stopped=stopped), _stamp(Path(path), data)
 
 
 def save_model(model: Model, path: str | os.PathLike[str], *, known: FileStamp | None) -> FileStamp:

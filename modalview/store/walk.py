@@ -6,11 +6,12 @@ tells later checks of meaning where they would only repeat themselves.
 """
 
 import math
+from collections.abc import Callable
 from dataclasses import replace
 from difflib import get_close_matches
 from typing import Any
 
-from modalview.errors import Fault, UnitError
+from modalview.errors import CancelledError, Fault, UnitError
 from modalview.model.fields import Field, Shape, fields_of, quantity_in
 from modalview.model.parts import LINK_KINDS, Link, Motion
 from modalview.model.rules_context import LONGEST_NAME, cut, place_of
@@ -27,6 +28,11 @@ BLANK = Entry("", math.nan)
 
 _VALUE_KEYS = ("value", "tolerance", "source", "status", "by", "given")
 _TOLERANCE_PAIRS = (("minus", "plus"), ("from", "to"))
+
+
+def never() -> bool:
+    """Never called off."""
+    return False
 
 
 def shown(node: Any) -> str:
@@ -89,10 +95,13 @@ class Walk:
     ----------
     motion : Motion
         Decides the quantity of some fields.
+    stopped : callable
+        Asked at every part whether the reading was called off.
     """
 
-    def __init__(self, motion: Motion) -> None:
+    def __init__(self, motion: Motion, stopped: Callable[[], bool] = never) -> None:
         self.motion = motion
+        self._stopped = stopped
         self.faults: list[Fault] = []
         self.spoiled: list[str] = []
         self._entries: dict[tuple[str, Quantity], Entry] = {}
@@ -104,6 +113,8 @@ class Walk:
 
     def record(self, part: type, node: Any, path: str, *, besides: tuple[str, ...] = ()) -> Any:
         """Read an object with named keys; ``besides`` are keys read elsewhere, such as ``kind``."""
+        if self._stopped():
+            raise CancelledError("Reading was called off.")
         fields = fields_of(part)
         self._check_keys(node, tuple(field.key for field in fields) + besides, path)
         found: dict[str, Any] = {}

@@ -29,6 +29,8 @@ class Analysis(QObject):
         self.damped: Any = None  # study.damped.DampedSolution, where there are dashpots
         self.plane: Any = None  # drawing.complexplanecontent of this model or of the one before
         self.plane_why = ""
+        # Of the model on the sheet, where modes of the one before the edit are shown: number to hertz.
+        self.foretold: dict[int, float] = {}
         self.refusal: Exception | None = None
         self.looking = False
         self.finding = False
@@ -53,6 +55,7 @@ class Analysis(QObject):
         self._patience.stop()
         self._model = self.outlook = self.solution = self.refusal = None
         self.damped = self.plane = None
+        self.foretold = {}
         self._set_finding(False)
         self.outlook_changed.emit()
         self.solution_changed.emit()
@@ -60,6 +63,9 @@ class Analysis(QObject):
 
     def follow(self, model: Model) -> None:
         """Study an edited model."""
+        self.foretold = {}
+        if self.solution is not None and self.solution.outlook.request.model == model:
+            model = self.solution.outlook.request.model  # an edit was undone: its modes are there
         self._order(model, Find.IF_SMALL if self.automatic else Find.NEVER)
         if not self.automatic or self.solution is None:
             self.solution_changed.emit()  # the modes shown are out of date from here on
@@ -90,31 +96,51 @@ class Analysis(QObject):
 
     @Slot(object)
     def _on_answered(self, answer: Answer) -> None:
-        match answer.step:
-            case Step.LOOKED:
-                self.outlook, self.refusal, self.looking = answer.content, None, False
-                if not self._patience.isActive():
-                    self.outlook_changed.emit()
-            case Step.FINDING:
-                self._set_finding(True)
-            case Step.PROGRESSED:
-                self.progress = answer.content
-                self.busy_changed.emit()
-            case Step.SOLVED:
-                self._patience.stop()
-                self.solution = answer.content
-                self._set_finding(False)
-                self.solution_changed.emit()
-            case Step.DAMPED:
-                self.damped, self.plane, self.plane_why = answer.content
-                self.damped_changed.emit()
-            case Step.STOPPED:
-                self._set_finding(False)
-            case Step.REFUSED:
-                self._refuse(answer.content)
-            case Step.FAILED:
-                self._set_finding(False)
-                self.failed.emit(answer.content)
+        take = {
+            Step.LOOKED: self._take_outlook,
+            Step.FORETOLD: self._foretell,
+            Step.FINDING: lambda _: self._set_finding(True),
+            Step.PROGRESSED: self._take_progress,
+            Step.SOLVED: self._take_solution,
+            Step.DAMPED: self._take_damped,
+            Step.STOPPED: lambda _: self._set_finding(False),
+            Step.REFUSED: self._refuse,
+            Step.FAILED: self._fail,
+        }[answer.step]
+        take(answer.content)
+
+    def _take_outlook(self, outlook: Any) -> None:
+        self.outlook, self.refusal, self.looking = outlook, None, False
+        if not self._patience.isActive():
+            self.outlook_changed.emit()
+
+    def _take_progress(self, progress: tuple[str, float]) -> None:
+        self.progress = progress
+        self.busy_changed.emit()
+
+    def _take_solution(self, solution: Any) -> None:
+        self._patience.stop()
+        self.solution, self.foretold = solution, {}
+        self._set_finding(False)
+        self.solution_changed.emit()
+
+    def _take_damped(self, content: tuple[Any, Any, str]) -> None:
+        damped, self.plane, self.plane_why = content
+        if damped is not None or not self.outlook.dashpots:  # else those of before stay, out of date
+            self.damped = damped
+        self.damped_changed.emit()
+
+    def _fail(self, error: Exception) -> None:
+        self._set_finding(False)
+        self.failed.emit(error)
+
+    def _foretell(self, foretold: dict[int, float]) -> None:
+        """Keep what the modes shown become by the edit; they stay marked as out of date."""
+        if self.solution is None or self.solution_current:
+            return
+        self._patience.stop()
+        self.foretold = foretold
+        self.solution_changed.emit()
 
     def _refuse(self, error: Exception) -> None:
         self._patience.stop()

@@ -47,8 +47,11 @@ class Document(QObject):
         return self.path.name if self.path else "not saved yet"
 
     def open(self, path: Path, *, example: bool = False) -> None:
-        """Open a file; when it cannot be used its error is raised and the open model stays."""
-        model, stamp = open_model(path)
+        """Open a file and wait for it; one that cannot be used raises its error and the open model stays."""
+        self.show_read(*open_model(path), path, example=example)
+
+    def show_read(self, model: Model, stamp: FileStamp, path: Path, *, example: bool = False) -> None:
+        """Show a model that was read from a file."""
         self.model = model
         self.path, self.example, self._stamp = path, example, stamp
         self.saved_at = None

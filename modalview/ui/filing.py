@@ -2,14 +2,18 @@
 
 from collections.abc import Callable
 from pathlib import Path
+from typing import Any
 
 from PySide6.QtCore import QObject, Qt
 from PySide6.QtWidgets import QFileDialog, QWidget
 
 from modalview.errors import FaultsError, FileChangedError, InputError
+from modalview.model.parts import Model
+from modalview.store import FileStamp, open_model
 from modalview.ui import settings as names
 from modalview.ui.dialogs import TextDialog, ask
 from modalview.ui.document import Document
+from modalview.ui.errand import Errand
 from modalview.ui.examples import SUFFIX
 from modalview.ui.settings import Settings
 
@@ -24,6 +28,7 @@ class Filing(QObject):
     def __init__(self, document: Document, settings: Settings, window: QWidget) -> None:
         super().__init__(window)
         self._document, self._settings, self._window = document, settings, window
+        self.reading = Errand(self)
 
     def guard(self, then: Then) -> None:
         """Do something that would lose unsaved changes, after asking what to do with them."""
@@ -54,19 +59,35 @@ class Filing(QObject):
         self.guard(lambda: self.read(path, example=example))
 
     def read(self, path: Path, *, example: bool = False) -> None:
-        """Open a file; when it cannot be used say why, all at once, and keep the open model."""
+        """Open a file in a thread; one that is still being read is given up."""
+        before = self._document.model
+
+        def then(result: Any, error: Exception | None) -> None:
+            if error is not None:
+                self._tell_unread(path, error)
+            elif self._document.model is before:
+                self._show_read(result, path, example=example)
+            else:  # edited meanwhile
+                self.guard(lambda: self._show_read(result, path, example=example))
+
+        self.reading.run(f"Opening {path.name}…", lambda stopped: open_model(path, stopped=stopped), then)
+
+    def _show_read(self, result: tuple[Model, FileStamp], path: Path, *, example: bool) -> None:
+        self._document.show_read(*result, path, example=example)
+        if not example:
+            self._remember(path)
+
+    def _tell_unread(self, path: Path, error: Exception) -> None:
+        """Say why a file cannot be used, all at once; the open model is kept."""
         kept = "" if self._document.model is None else " The open model is kept."
-        try:
-            self._document.open(path, example=example)
-        except FaultsError as error:
+        if isinstance(error, FaultsError):
             number = len(error.faults)
             lead = f"{path.name} cannot be opened: {number} fault{'s' if number > 1 else ''}.{kept}"
             TextDialog("Faults of the file", lead, str(error), self._window).open()
-        except InputError as error:
+        elif isinstance(error, InputError):
             self._tell(f"{path.name} cannot be opened.{kept}", error)
         else:
-            if not example:
-                self._remember(path)
+            raise error
 
     def _remember(self, path: Path) -> None:
         place = str(path.resolve())

@@ -3,7 +3,7 @@
 from pathlib import Path
 from typing import Any
 
-from PySide6.QtCore import QTimer, Signal
+from PySide6.QtCore import Qt, QTimer, Signal
 from PySide6.QtGui import QCloseEvent, QDragEnterEvent, QDropEvent
 
 from modalview.ui import settings as names
@@ -20,6 +20,7 @@ from modalview.ui.settings import Settings
 from modalview.ui.worker import Worker
 
 _TOLD_MS = 6000
+_BLINK_MS = 150
 
 
 class Window(Frame):
@@ -34,6 +35,8 @@ class Window(Frame):
         self._worker = worker
         self.filing = Filing(self.document, settings, self)
         self._may_close = False
+        # A file that is read in a blink is not told of.
+        self._patience = QTimer(self, singleShot=True, interval=_BLINK_MS)
         self._connect()
         self._recall()
         self.show_document()
@@ -43,6 +46,8 @@ class Window(Frame):
         self.document.model_changed.connect(self.on_model_changed)
         self.document.clean_changed.connect(lambda clean: self.setWindowModified(not clean))
         self.document.saved.connect(self.on_saved)
+        self.filing.reading.busy_changed.connect(self.show_reading)
+        self._patience.timeout.connect(lambda: self._tell_reading(self._patience.property("what")))
         self.analysis.outlook_changed.connect(self.show_known)
         self.analysis.solution_changed.connect(self.show_modes)
         self.analysis.damped_changed.connect(self.show_damped)
@@ -83,6 +88,23 @@ class Window(Frame):
         self.apply_theme()
 
     # The model
+
+    def show_reading(self, what: str) -> None:
+        """Say that a file is being read, if that takes long; the window stays in use."""
+        self._patience.setProperty("what", what)
+        if what:
+            self._patience.start()
+        else:
+            self._patience.stop()
+            self._tell_reading("")
+
+    def _tell_reading(self, what: str) -> None:
+        if what:
+            self.statusBar().showMessage(what)
+            self.setCursor(Qt.CursorShape.BusyCursor)
+        else:
+            self.statusBar().clearMessage()
+            self.unsetCursor()
 
     def start_worker(self) -> None:
         """Let the thread begin; models opened before wait for it."""
@@ -312,6 +334,7 @@ class Window(Frame):
             self.filing.guard(self._close_unasked)
             return
         self._settings.set(names.GEOMETRY, self.saveGeometry())
+        self.filing.reading.close()
         self._worker.close()
         for place in (self.sheet, self.modes.row.card, self.damped.row.card):
             place.close_threads()

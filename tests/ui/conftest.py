@@ -88,7 +88,8 @@ def pump(window, qtbot) -> Window:
 
 
 def settle(qtbot, window: Window) -> None:
-    """Let the study of the model on the sheet come to its end."""
+    """Let a file be read and the study of the model on the sheet come to its end."""
+    qtbot.waitUntil(lambda: not window.filing.reading.busy, timeout=5000)
     analysis = window.analysis
     qtbot.waitUntil(lambda: not analysis.looking and not analysis.finding, timeout=5000)
     if analysis.automatic and analysis.refusal is None:

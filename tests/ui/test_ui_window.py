@@ -145,12 +145,13 @@ def test_modes_are_stepped_through_round_the_end(pump):
     assert pump.modes.row.chosen().number == 1
 
 
-def test_a_faulty_file_is_told_with_all_faults_and_the_open_model_is_kept(pump, tmp_path):
+def test_a_faulty_file_is_told_with_all_faults_and_the_open_model_is_kept(pump, qtbot, tmp_path):
     before = pump.document.model
     bad = tmp_path / "bad.keepclear"
     text = PUMP.read_text(encoding="utf-8")
     bad.write_text(text.replace('"620 kg"', '"-620 kg"').replace('"2950 rpm"', '"fast"'), encoding="utf-8")
     pump.filing.open(bad)
+    qtbot.waitUntil(lambda: not pump.filing.reading.busy)
     (dialog,) = pump.findChildren(TextDialog)
     told = dialog.text.toPlainText()
     assert "motor" in told
@@ -159,8 +160,9 @@ def test_a_faulty_file_is_told_with_all_faults_and_the_open_model_is_kept(pump, 
     dialog.close()
 
 
-def test_a_missing_file_is_told_and_an_empty_window_stays_empty(window, tmp_path):
+def test_a_missing_file_is_told_and_an_empty_window_stays_empty(window, qtbot, tmp_path):
     window.filing.open(tmp_path / "none.keepclear")
+    qtbot.waitUntil(lambda: not window.filing.reading.busy)
     click(window, "Close")
     assert window.document.model is None
     assert window.pages.currentWidget() is window.welcome
@@ -188,9 +190,9 @@ def test_opening_another_file_with_changes_saves_first_when_asked(window, qtbot,
     window.document.type_value(BASE_SUPPORT, "340 kN/mm")
     window.filing.open(FAN, example=True)
     click(window, "Save")
+    settle(qtbot, window)
     assert read_model(own).links[2].stiffness.text == "340 kN/mm"
     assert window.document.model == read_model(FAN)
-    settle(qtbot, window)
 
 
 def test_a_file_changed_on_disk_is_not_overwritten_unasked(window, qtbot, tmp_path):

@@ -1,5 +1,6 @@
 """The worker and what the window keeps of its answers, with a study that waits to be told."""
 
+from dataclasses import replace
 from threading import Event
 from types import SimpleNamespace
 
@@ -145,6 +146,60 @@ def test_modes_are_current_only_for_the_model_they_were_found_for(worker, bench,
     analysis.follow(SECOND)
     assert analysis.solution is not None
     assert not analysis.solution_current
+
+
+def test_an_edit_that_is_undone_gives_its_modes_back(worker, bench, qtbot):
+    bench.go.set()
+    analysis = Analysis(worker)
+    analysis.follow(FIRST)
+    qtbot.waitUntil(lambda: analysis.solution_current)
+    solution, analysis.automatic = analysis.solution, False
+    analysis.follow(SECOND)
+    assert not analysis.solution_current
+    analysis.follow(replace(SECOND, title=FIRST.title))
+    assert analysis.solution is solution
+    assert analysis.solution_current
+
+
+def test_what_modes_become_by_an_edit_is_foretold_until_they_are_found_anew(worker, bench, qtbot):
+    bench.go.set()
+    analysis = Analysis(worker)
+    analysis.follow(FIRST)
+    qtbot.waitUntil(lambda: analysis.solution_current)
+    analysis.automatic = False
+    analysis.follow(SECOND)
+    assert analysis.foretold == {}
+    qtbot.waitUntil(lambda: analysis.foretold == {1: 12.5})
+    assert not analysis.solution_current
+    analysis.find()
+    qtbot.waitUntil(lambda: analysis.solution_current)
+    assert analysis.foretold == {}
+
+
+def test_nothing_is_foretold_where_no_modes_are_shown(worker, bench, qtbot):
+    bench.go.set()
+    analysis = Analysis(worker)
+    analysis.follow(FIRST)
+    qtbot.waitUntil(lambda: analysis.solution_current)
+    analysis.forget()
+    analysis.automatic = False
+    analysis.follow(SECOND)
+    qtbot.waitUntil(lambda: analysis.plane is not None)
+    assert analysis.foretold == {}
+
+
+def test_damped_modes_of_before_an_edit_stay_and_are_out_of_date(worker, bench, qtbot):
+    bench.go.set()
+    bench.dashpots = True
+    analysis = Analysis(worker)
+    analysis.follow(FIRST)
+    qtbot.waitUntil(lambda: analysis.damped_current)
+    analysis.automatic = False
+    analysis.plane = None
+    analysis.follow(SECOND)
+    qtbot.waitUntil(lambda: analysis.plane is not None)
+    assert analysis.damped is not None
+    assert not analysis.damped_current
 
 
 def test_a_model_that_cannot_be_studied_is_told_and_the_next_one_is_studied(worker, bench, qtbot):
