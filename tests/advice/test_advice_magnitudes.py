@@ -1,0 +1,72 @@
+"""Values far off those of their kind, and values that nobody has typed."""
+
+import pytest
+
+G = {"id": "g", "position": ["0 m", "0 m"]}
+
+
+def chain(stiffnesses, masses=None):
+    masses = masses or ["100 kg"] * len(stiffnesses)
+    bodies = [{"id": f"m{i}", "mass": mass} for i, mass in enumerate(masses)]
+    ends = [{"support": "g"}, *({"body": body["id"]} for body in bodies)]
+    links = [
+        {"id": f"k{i}", "kind": "spring", "from": ends[i], "to": ends[i + 1], "stiffness": stiffness}
+        for i, stiffness in enumerate(stiffnesses)
+    ]
+    return {"bodies": bodies, "supports": [G], "links": links}
+
+
+def test_a_spring_three_thousand_times_the_median_is_doubted_with_both_numbers(told):
+    [doubt] = told(
+        "value far off", "single axis", **chain(["4e8 N/m", "3.9e8 N/m", "1.2e12 N/m", "4.1e8 N/m"])
+    )
+    assert doubt.parts == ("k2",)
+    assert doubt.text == (
+        "Spring k2: stiffness 1.2e12 N/m is 3000 times the median of the other 3 springs, 400 kN/mm; "
+        "a power of ten?"
+    )
+    assert "rigid" in doubt.effect
+
+
+def test_a_mass_below_a_thousandth_of_the_median_is_doubted(told):
+    masses = ["500 kg", "620 g", "700 kg", "800 kg"]
+    [doubt] = told("value far off", "single axis", **chain(["1e8 N/m"] * 4, masses))
+    assert doubt.parts == ("m1",)
+    assert "mass 620 g is 1/970 of" not in doubt.text
+    assert "mass 620 g is 1/1100 of the median of the other 3 masses, 700 kg" in doubt.text
+
+
+@pytest.mark.parametrize("third", ["4.1e5 N/m", "3e11 N/m", "0.4 kN/mm"])
+def test_within_a_thousand_times_nothing_is_said(told, third):
+    assert not told("value far off", "single axis", **chain(["4e8 N/m", "3.9e8 N/m", third, "4.1e8 N/m"]))
+
+
+def test_of_two_springs_both_are_named(told):
+    [doubt] = told("value far off", "single axis", **chain(["4e8 N/m", "2e12 N/m"]))
+    assert doubt.parts == ("k1", "k0")
+    assert "5000 times that of k0, 4e8 N/m" in doubt.text
+
+
+def test_mounts_are_compared_with_springs_and_their_turning_stiffness_is_not(told):
+    mount = {
+        "id": "mt",
+        "kind": "mount",
+        "from": {"body": "a"},
+        "to": {"support": "g"},
+        "stiffness": {"x": "1e6 N/m", "y": "1e10 N/m", "rz": "50 N m/rad"},
+    }
+    springs = [
+        {"id": name, "kind": "spring", "from": {"body": "a"}, "to": {"support": "g"}, "stiffness": "1e6 N/m"}
+        for name in ("k1", "k2")
+    ]
+    body = {"id": "a", "mass": "100 kg", "inertia": "10 kg m2", "position": ["0 m", "1 m"]}
+    found = told("value far off", bodies=[body], supports=[G], links=[mount, *springs])
+    assert [(one.parts, "stiffness y 1e10 N/m" in one.text) for one in found] == [(("mt",), True)]
+
+
+def test_many_of_one_rule_are_folded_into_one_that_holds_all_their_parts(told):
+    stiffnesses = ["1e6 N/m"] * 20 + ["1e10 N/m"] * 9
+    found = told("value far off", "single axis", **chain(stiffnesses))
+    assert len(found) == 4
+    assert len(found[-1].parts) == 6
+    assert found[-1].text.endswith("The same holds of 5 more.")
