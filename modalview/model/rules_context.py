@@ -86,6 +86,8 @@ class Context:
         if here is None or there is None:
             return None
         line = tuple(b - a for a, b in zip(here, there, strict=True))
+        if any(math.isnan(number) for number in line):
+            return None  # a position that could not be read is told where it stands
         scale = max(abs(number) for number in (*here, *there))
         return line if math.hypot(*line) > COINCIDENT * scale else (0.0,) * len(line)
 

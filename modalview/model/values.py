@@ -5,12 +5,15 @@ from typing import Any
 
 from modalview.errors import UnitError
 from modalview.units.parse import read
-from modalview.units.quantities import RATIO, Quantity
+from modalview.units.quantities import LENGTH, RATIO, Quantity
 from modalview.units.show import short
 
 # No number of a machine is beyond these in SI; squares and products of those within stay floating-point
 # numbers, so that nothing computed from a typed value can overflow or vanish.
 SMALLEST, LARGEST = 1e-30, 1e30
+# Ends nearer to each other than 1e-9 of their coordinates have no direction: to this reach, in m, that is
+# a tenth of a millimetre. Coordinates of a survey are larger; a model's are counted from its own zero.
+FARTHEST = 1e5
 
 # Source of a value that a new part was drawn with and that nobody has typed yet.
 STARTING = "starting value, not given yet"
@@ -48,6 +51,11 @@ class Entry:
             size = short(si) if quantity.si_unit == "1" else f"{short(si)} {quantity.si_unit}"
             raise UnitError(
                 f'"{text}" is {size}; no machine has such a {quantity.name}: check unit and power'
+            )
+        if quantity == LENGTH and abs(si) > FARTHEST:
+            raise UnitError(
+                f'"{text}" is {short(si)} m; a length is at most {short(FARTHEST)} m, beyond which small '
+                "distances would be lost: check unit and power, or count positions from a nearer zero"
             )
         return cls(text, si)
 
