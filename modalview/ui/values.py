@@ -6,6 +6,7 @@ from typing import Any
 
 from modalview.model.addresses import Address, look
 from modalview.model.editable import EditableField, editable_fields
+from modalview.model.forms import FormLine
 from modalview.model.parts import Body, Machine, Model
 from modalview.model.tolerance_text import tolerance_text
 from modalview.units import quantities as q
@@ -137,11 +138,11 @@ def _row(model: Model, field: EditableField, part: str, part_id: str, system: st
         converted=converted(si, field.quantity, system) if known else "",
         tolerance_address=field.tolerance_address,
         tolerance=field.tolerance,
-        inherited=_inherited(model, field) if field.tolerance_address else "",
+        inherited=inherited(model, field) if field.tolerance_address else "",
     )
 
 
-def _inherited(model: Model, field: EditableField) -> str:
+def inherited(model: Model, field: EditableField | FormLine) -> str:
     """Return the tolerance of a value that has none of its own: the part's, the default, else exact."""
     part = look(model, field.address[:2])
     own = getattr(part, "tolerance", None)

@@ -1,0 +1,144 @@
+"""A form that floats on the sheet beside what it is about, and keeps keys and mouse from the sheet below."""
+
+from PySide6.QtCore import QRect, QSize, Qt, Signal
+from PySide6.QtGui import QKeyEvent
+from PySide6.QtWidgets import (
+    QFrame,
+    QGridLayout,
+    QHBoxLayout,
+    QLabel,
+    QLayout,
+    QScrollArea,
+    QToolButton,
+    QVBoxLayout,
+    QWidget,
+)
+
+# Pixels between the form and what it is about, and from the edges of the sheet.
+_GAP, _EDGE = 12, 6
+
+
+def place_beside(size: QSize, beside: QRect, inside: QRect) -> QRect:
+    """Return where a form goes: right of a rectangle, left of it, below or above, where there is room.
+
+    Where there is room on no side it takes the side with the most, moved so that it lies inside.
+
+    >>> place_beside(QSize(100, 50), QRect(10, 10, 20, 20), QRect(0, 0, 400, 300)).x()
+    42
+    """
+    free = {
+        "right": inside.right() - beside.right() - _GAP,
+        "left": beside.left() - inside.left() - _GAP,
+        "below": inside.bottom() - beside.bottom() - _GAP,
+        "above": beside.top() - inside.top() - _GAP,
+    }
+    wanted = {
+        "right": size.width(),
+        "left": size.width(),
+        "below": size.height(),
+        "above": size.height(),
+    }
+    side = next((side for side in free if free[side] >= wanted[side]), None)
+    side = side or max(free, key=lambda one: free[one] - wanted[one])
+    x = beside.right() + _GAP if side == "right" else beside.left() - _GAP - size.width()
+    y = beside.bottom() + _GAP if side == "below" else beside.top() - _GAP - size.height()
+    x = beside.left() if side in ("below", "above") else x
+    y = beside.top() if side in ("right", "left") else y
+    x = max(inside.left(), min(x, inside.right() + 1 - size.width()))
+    y = max(inside.top(), min(y, inside.bottom() + 1 - size.height()))
+    return QRect(x, y, size.width(), size.height())
+
+
+class FloatingForm(QFrame):
+    """Title, lines in a grid that scrolls where it must, and a foot."""
+
+    closed = Signal()
+
+    def __init__(self, parent: QWidget) -> None:
+        super().__init__(parent)
+        self.setObjectName("floatingForm")
+        self.setAttribute(Qt.WidgetAttribute.WA_NoMousePropagation)
+        self.setCursor(Qt.CursorShape.ArrowCursor)
+        self._beside = QRect()
+        self.title = QLabel(self)
+        self.title.setProperty("role", "strong")
+        self.close_button = QToolButton(self, text="\u00d7", accessibleName="close the form")
+        self.close_button.setToolTip("Close (Esc)")
+        self.close_button.clicked.connect(self.hide_form)
+        head = QHBoxLayout()
+        head.addWidget(self.title, 1)
+        head.addWidget(self.close_button)
+        self.inside = QWidget(self, objectName="floatingFormInside")
+        self.grid = QGridLayout(self.inside)
+        self.grid.setContentsMargins(0, 0, 4, 0)
+        self.grid.setVerticalSpacing(3)
+        self.grid.setColumnStretch(1, 1)
+        self.grid.setSizeConstraint(QLayout.SizeConstraint.SetMinimumSize)
+        self.scroll = QScrollArea(self, objectName="floatingFormScroll")
+        self.scroll.setWidgetResizable(True)
+        self.scroll.setFrameShape(QFrame.Shape.NoFrame)
+        self.scroll.setHorizontalScrollBarPolicy(Qt.ScrollBarPolicy.ScrollBarAsNeeded)
+        self.scroll.setFocusPolicy(Qt.FocusPolicy.NoFocus)
+        self.scroll.setWidget(self.inside)
+        self.foot = QHBoxLayout()
+        layout = QVBoxLayout(self)
+        layout.setContentsMargins(10, 6, 8, 8)
+        layout.setSpacing(5)
+        layout.addLayout(head)
+        layout.addWidget(self.scroll, 1)
+        layout.addLayout(self.foot)
+        self.hide()
+
+    def float_beside(self, beside: QRect) -> None:
+        """Show the form beside a rectangle of the sheet."""
+        self._beside = beside
+        self.show()
+        self.raise_()
+        self.fit()
+
+    def fit(self) -> None:
+        """Take the size that the lines need, and the place for it."""
+        if self.isHidden():
+            return
+        room = self.parentWidget().rect().adjusted(_EDGE, _EDGE, -_EDGE, -_EDGE)
+        self.inside.ensurePolished()
+        self.grid.activate()
+        wanted = self.inside.sizeHint()
+        across = self.layout().contentsMargins()
+        bar = self.scroll.verticalScrollBar().sizeHint().width()
+        head_and_foot = self.layout().sizeHint().height() - self.scroll.sizeHint().height()
+        height = head_and_foot + self._height_for(wanted.width())
+        width = wanted.width() + across.left() + across.right() + 2 * self.frameWidth()
+        if height > room.height():
+            width += bar
+        width = max(width, self.layout().minimumSize().width())
+        size = QSize(min(width, room.width()), min(height, room.height()))
+        self.setGeometry(place_beside(size, self._beside, room))
+
+    def _height_for(self, width: int) -> int:
+        height = self.grid.heightForWidth(width) if self.grid.hasHeightForWidth() else -1
+        return max(height, 0) or self.inside.sizeHint().height()
+
+    def hide_form(self) -> None:
+        """Close, and give the keyboard back to the sheet."""
+        if self.isHidden():
+            return
+        had_keyboard = self.isAncestorOf(self.focusWidget()) if self.focusWidget() else False
+        self.hide()
+        if had_keyboard:
+            self.parentWidget().setFocus()
+        self.closed.emit()
+
+    def keyPressEvent(self, event: QKeyEvent) -> None:  # noqa: N802  (Qt's name)
+        """Esc closes; no key that a field does not want reaches the sheet below."""
+        if event.key() == Qt.Key.Key_Escape:
+            self.leave()
+        event.accept()
+
+    def keyReleaseEvent(self, event: QKeyEvent) -> None:  # noqa: N802  (Qt's name)
+        """Keep it from the sheet, too."""
+        event.accept()
+
+    def leave(self) -> None:
+        """Close without taking what was typed last."""
+        self.hide_form()
