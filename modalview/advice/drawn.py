@@ -29,6 +29,7 @@ def doubts(model: Model) -> tuple[Doubt, ...]:
         joints.floating(survey),
         joints.lone_parts(survey),
         joints.loose_ends(survey),
+        magnitudes.never_typed(typed),
         magnitudes.far_off(typed),
         inertias.missing(survey),
         inertias.outside_its_size(survey),

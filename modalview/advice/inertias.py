@@ -8,7 +8,7 @@ from modalview.advice.survey import Survey, carries
 from modalview.assembly.groups import Groups
 from modalview.model.gears import gear_ratio
 from modalview.model.parts import Beam, Body, Gear, InertiaTensor, Link, Motion, Mount, Shaft
-from modalview.model.values import Value
+from modalview.model.values import STARTING, Value
 from modalview.units import quantities as q
 from modalview.units.show import show
 
@@ -33,7 +33,7 @@ def outside_its_size(survey: Survey) -> Iterator[Doubt]:
         return
     for body in survey.model.bodies:
         size, inertia = drawn_size(body), _largest(body)
-        if size is None or inertia is None or body.mass is None or body.mass.si == 0 or inertia == 0:
+        if size is None or not inertia or body.mass is None or body.mass.si == 0 or _starting(body):
             continue
         radius = math.sqrt(inertia / body.mass.si)
         if NARROWEST * size <= radius <= WIDEST * size:
@@ -55,6 +55,13 @@ def drawn_size(body: Body) -> float | None:
     drawn = body.drawn
     known = [] if drawn is None else [side.si for side in (drawn.width, drawn.height) if side is not None]
     return max(known, default=0.0) or None
+
+
+def _starting(body: Body) -> bool:
+    """Tell whether mass or inertia is one that nobody has typed: that is told, and no more of it."""
+    tensor = body.inertia
+    moments = (tensor.Ixx, tensor.Iyy, tensor.Izz) if isinstance(tensor, InertiaTensor) else (tensor,)
+    return any(value is not None and value.source == STARTING for value in (body.mass, *moments))
 
 
 def _largest(body: Body) -> float | None:
@@ -105,7 +112,7 @@ def gd2(survey: Survey) -> Iterator[Doubt]:
         if not isinstance(inertia, Value) or body.mass is None or body.mass.si * inertia.si == 0:
             continue
         estimate = solid_inertia(body, survey.motion)
-        if estimate is None:
+        if estimate is None or _starting(body):
             continue
         if abs(inertia.si / estimate / GD2 - 1) < NEAR_GD2 and _typed_plainly(inertia):
             yield _gd2_doubt(body, inertia, estimate, "what a solid body of its mass and drawn size has")

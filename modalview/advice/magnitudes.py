@@ -9,7 +9,7 @@ from typing import NamedTuple
 from modalview.advice.doubt import Doubt, named, plain
 from modalview.advice.survey import Survey
 from modalview.model.parts import Beam, Body, Damper, Gear, InertiaTensor, Link, Motion, Mount, Shaft, Spring
-from modalview.model.values import Value
+from modalview.model.values import STARTING, Value
 from modalview.units import quantities as q
 from modalview.units.quantities import Quantity
 from modalview.units.show import show, significant
@@ -120,7 +120,7 @@ def far_off(values: list[Typed]) -> Iterator[Doubt]:
     """Yield values a thousand times the median of the others of their kind, or below a thousandth of it."""
     kinds: dict[str, list[Typed]] = {}
     for one in values:
-        if one.value.si > 0:
+        if one.value.si > 0 and one.value.source != STARTING:
             kinds.setdefault(one.kind.many, []).append(one)
     for group in kinds.values():
         if len(group) == 2:
@@ -175,11 +175,11 @@ def _round(number: float) -> str:
     return significant(number, 2)
 
 
-def never_typed(values: list[Typed], starting: str) -> Iterator[Doubt]:
+def never_typed(values: list[Typed]) -> Iterator[Doubt]:
     """Yield values that still are what the program put there when the part was drawn."""
     found: dict[str, list[Typed]] = {}
     for one in values:
-        if one.value.source == starting:
+        if one.value.source == STARTING:
             found.setdefault(one.part.id, []).append(one)
     for part, group in found.items():
         told = " and ".join(f"{one.what} {one.value.text}" for one in group)
@@ -188,5 +188,5 @@ def never_typed(values: list[Typed], starting: str) -> Iterator[Doubt]:
             "starting value",
             (part,),
             f"{named(group[0].part)}: {told} {verb}; nobody has given {nobody} yet.",
-            "Frequencies and verdicts that hang on it say nothing of your machine yet.",
+            f"Frequencies and verdicts that hang on {nobody} say nothing of your machine yet.",
         )

@@ -7,6 +7,7 @@ from typing import Any
 
 import numpy as np
 
+from modalview.advice.doubt import Doubt
 from modalview.bounds.discs import Discs, Group
 from modalview.eigen.modes import Modes
 from modalview.resonance.results import Check
@@ -37,7 +38,13 @@ def bounds_document(path: Path, outlook: Outlook | MatrixOutlook) -> dict[str, A
             "frobenius": bounds.norms.frobenius,
         },
         "notes": [*outlook.notes, *bounds.notes],
+        "doubts": [doubt_document(one) for one in outlook.doubts] if isinstance(outlook, Outlook) else [],
     }
+
+
+def doubt_document(doubt: Doubt) -> dict[str, Any]:
+    """Return one doubt about the model."""
+    return {"rule": doubt.rule, "parts": list(doubt.parts), "text": doubt.text, "effect": doubt.effect}
 
 
 def _band_document(check: Check) -> dict[str, Any]:

@@ -5,6 +5,7 @@ from decimal import ROUND_CEILING, ROUND_FLOOR, Context, Decimal
 from pathlib import Path
 from textwrap import fill
 
+from modalview.advice.doubt import Doubt
 from modalview.bounds.before import to_hz
 from modalview.bounds.discs import Group
 from modalview.cli.cautions import CAUTION
@@ -42,7 +43,17 @@ def bounds_text(outlook: Outlook | MatrixOutlook) -> str:
         parts.append(table([head, *rows], right=frozenset({2, 3, 4})))
     parts += [_separated(bounds.separated)] if bounds.separated else []
     parts += [_wrapped(outlook.sentence), wrapped_lines(bounds.notes)]
+    if isinstance(outlook, Outlook) and outlook.doubts:
+        parts.append(doubts_text(outlook.doubts))
     return "\n\n".join(parts + _tail(outlook))
+
+
+def doubts_text(doubts: Sequence[Doubt]) -> str:
+    """Return what is doubted about the model, each with what it would mean."""
+    lines = [
+        _wrapped(f"  {one.text}", "    ") + "\n" + _wrapped(f"    {one.effect}", "    ") for one in doubts
+    ]
+    return "Doubts:\n" + "\n".join(lines)
 
 
 def _separated(groups: Sequence[Group]) -> str:

@@ -3,6 +3,8 @@
 import math
 from time import perf_counter
 
+from modalview.advice.assembled import doubts_of
+from modalview.advice.drawn import doubts
 from modalview.assembly.assemble import Assembly, assemble
 from modalview.assembly.dampedterms import has_dashpots
 from modalview.assembly.parameters import Case
@@ -64,6 +66,7 @@ def look(request: Request, previous: Outlook | None = None) -> Outlook:
         coordinates=assembly.pencil().n,
         toleranced=bool(assembly.toleranced),
         dashpots=has_dashpots(assembly),
+        doubts=(*doubts(model), *doubts_of(assembly, bounds)),
         seconds=perf_counter() - start,
     )
 

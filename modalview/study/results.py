@@ -1,11 +1,12 @@
 """What window and command line are given."""
 
 from collections.abc import Callable
-from dataclasses import dataclass, fields
+from dataclasses import dataclass, field, fields
 
 import numpy as np
 import numpy.typing as npt
 
+from modalview.advice.doubt import Doubt
 from modalview.assembly.assemble import Assembly
 from modalview.bounds.before import Bounds
 from modalview.eigen.modes import Modes
@@ -91,6 +92,8 @@ class Known:
         Whether the model has any.
     seconds : float
         Time it took.
+    doubts : tuple of Doubt
+        What an engineer would doubt about the model; they block nothing.
     """
 
     request: Request
@@ -105,6 +108,7 @@ class Known:
     toleranced: bool
     dashpots: bool
     seconds: float
+    doubts: tuple[Doubt, ...] = field(default=(), kw_only=True)
 
 
 @dataclass(frozen=True, slots=True)
@@ -120,7 +124,7 @@ class Outlook(Known):
 
     def known(self) -> Known:
         """Return it without the assembly."""
-        return Known(**{field.name: getattr(self, field.name) for field in fields(Known)})
+        return Known(**{one.name: getattr(self, one.name) for one in fields(Known)})
 
 
 @dataclass(frozen=True, slots=True)

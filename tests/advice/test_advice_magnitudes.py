@@ -2,6 +2,11 @@
 
 import pytest
 
+from modalview.advice.drawn import doubts
+from modalview.model.adding import add_body, add_link, add_support
+from modalview.model.parts import End, Model, Motion
+from modalview.model.values import STARTING
+
 G = {"id": "g", "position": ["0 m", "0 m"]}
 
 
@@ -70,3 +75,27 @@ def test_many_of_one_rule_are_folded_into_one_that_holds_all_their_parts(told):
     assert len(found) == 4
     assert len(found[-1].parts) == 6
     assert found[-1].text.endswith("The same holds of 5 more.")
+
+
+def test_a_value_that_nobody_has_typed_is_told_and_not_compared(told):
+    def start(text):
+        return {"value": text, "source": STARTING, "status": "assumed"}
+
+    parts = chain(["4e8 N/m", "3.9e8 N/m", start("1e12 N/m"), "4.1e8 N/m"])
+    [doubt] = told("starting value", "single axis", **parts)
+    assert doubt.parts == ("k2",)
+    assert doubt.text == "Spring k2: stiffness 1e12 N/m is a starting value; nobody has given it yet."
+    assert not told("value far off", "single axis", **parts)
+
+
+def test_parts_as_the_program_draws_them_raise_no_other_doubt_than_their_starting_values():
+    model, support = add_support(Model(motion=Motion.PLANE), (0.0, 0.0))
+    model, body = add_body(model, "body", (0.0, 1.0), (1.0, 0.5))
+    model, link = add_link(model, "spring", End(body=body), End(support=support))
+    found = doubts(model)
+    assert [(one.rule, one.parts) for one in found] == [
+        ("starting value", (body,)),
+        ("starting value", (link,)),
+    ]
+    assert "mass 100 kg and inertia" in found[0].text
+    assert "are starting values; nobody has given them yet" in found[0].text

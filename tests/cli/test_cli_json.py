@@ -18,6 +18,7 @@ BOUNDS = HEAD | {
     "gershgorin",
     "norms_rad2_per_s2",
     "notes",
+    "doubts",
 }
 BAND = {"check", "from_hz", "to_hz", "modes_inside", "modes_possible", "modes_certain"}
 DISCS = {"low_rad2_per_s2", "high_rad2_per_s2", "groups"}
