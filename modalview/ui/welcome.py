@@ -7,6 +7,7 @@ from PySide6.QtGui import QColor, QFont, QFontMetrics, QPainter, QPaintEvent, QP
 from PySide6.QtWidgets import (
     QAbstractButton,
     QGridLayout,
+    QHBoxLayout,
     QLabel,
     QPushButton,
     QScrollArea,
@@ -19,7 +20,7 @@ from modalview.ui.examples import Example
 from modalview.ui.theme import LIGHT, Theme
 
 _JOB = (
-    "Draw up the machine and what carries it as masses and springs in a model file. Keepclear shows where "
+    "Draw the machine and what carries it as masses and springs. Keepclear shows where "
     "its natural frequencies can and cannot lie, and proves over all tolerances whether a speed or an order "
     "of the machine meets one."
 )
@@ -110,6 +111,7 @@ class ExampleButton(QAbstractButton):
 class Welcome(QScrollArea):
     """Open a file, or one of the examples."""
 
+    new_asked = Signal()
     open_asked = Signal()
     example_chosen = Signal(Path)
 
@@ -126,11 +128,19 @@ class Welcome(QScrollArea):
         column.setSpacing(12)
         column.addWidget(_text("Keep every speed clear of every natural frequency", "title", inside))
         column.addWidget(_text(_JOB, "plain", inside))
+        self.new = QPushButton("New model…", inside)
+        self.new.setObjectName("findModes")
+        self.new.setSizePolicy(QSizePolicy.Policy.Fixed, QSizePolicy.Policy.Fixed)
+        self.new.clicked.connect(self.new_asked)
         self.open = QPushButton("Open a model file…", inside)
-        self.open.setObjectName("findModes")
         self.open.setSizePolicy(QSizePolicy.Policy.Fixed, QSizePolicy.Policy.Fixed)
         self.open.clicked.connect(self.open_asked)
-        column.addWidget(self.open)
+        buttons = QHBoxLayout()
+        buttons.setSpacing(10)
+        for button in (self.new, self.open):
+            buttons.addWidget(button)
+        buttons.addStretch(1)
+        column.addLayout(buttons)
         column.addWidget(_text("Or drop a .keepclear file on the window.", "quiet", inside))
         column.addSpacing(6)
         if examples:

@@ -36,6 +36,7 @@ class Hand(QObject):
     drawn = Signal(str)  # a part that was just drawn: its values are to be typed
     force_asked = Signal(str, tuple)  # body, place (m)
     form_asked = Signal(tuple)  # parts whose values are to be typed
+    begun = Signal()  # the mouse goes to work, or another tool was taken in hand
     told = Signal(str)  # a hint, or why something was not done
     numbers_changed = Signal()
     number_begun = Signal(str, float, float)  # a first character was typed during a drag, at a place
@@ -320,6 +321,7 @@ class Hand(QObject):
     def press(self, event: QMouseEvent) -> None:
         """Return the left button goes down."""
         if self.ready:
+            self.begun.emit()
             self._pointer, self._down, self.cursor = self._pointed(event), True, None
             self._after(lambda: self.tool.press(self._pointer))
 

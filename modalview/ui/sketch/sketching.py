@@ -6,6 +6,7 @@ from PySide6.QtCore import QObject
 
 from modalview.ui.sketch.hand import Hand
 from modalview.ui.sketch.numbers import NumberEntry
+from modalview.ui.sketch.partform import PartForm
 
 _TOLD_MS = 12_000
 
@@ -20,6 +21,7 @@ class Sketching(QObject):
         window.sheet.hand = self.hand
         self.palette = window.palette_of_tools
         self.numbers = NumberEntry(self.hand, window.sheet)
+        self.form = PartForm(window.document, window.sheet)
         self._awaited: tuple[tuple[str, ...], bool] | None = None  # parts whose form waits for the sheet
         self._connect()
 
@@ -30,6 +32,7 @@ class Sketching(QObject):
         hand.told.connect(lambda words: window.statusBar().showMessage(words, _TOLD_MS))
         hand.number_begun.connect(self.numbers.begin)
         hand.chosen_changed.connect(self._on_chosen_changed)
+        hand.begun.connect(self.form.hide_form)
         hand.drawn.connect(lambda part: self._ask_values((part,), fresh=True))
         hand.form_asked.connect(lambda parts: self._ask_values(parts, fresh=False))
         window.parts.part_chosen.connect(self._on_part_of_table)
@@ -79,6 +82,11 @@ class Sketching(QObject):
             self._on_laid_out()
 
     def _on_laid_out(self) -> None:
+        """Show the form that waited for its part to be on the sheet."""
         if self._awaited is None or self.hand.geometry.model is not self._window.document.model:
             return
-        self._awaited = None
+        (parts, fresh), self._awaited = self._awaited, None
+        beside = self.hand.rectangle(parts)
+        self.form.show_parts(parts, beside, fresh=fresh, system=self._window.system_of_units())
+        if not fresh:
+            self.form.take_keyboard()
