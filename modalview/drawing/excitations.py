@@ -93,7 +93,7 @@ def _push(geometry: SheetGeometry, body: int, arm: Floats, way: str | Floats, te
     if geometry.train is not None:
         segments = turning_arrow((middle, y2 - 8.0), 22.0, np.radians(205), np.radians(130))
         spots = [Spot(middle, y2 + step, 0, 1) for step in range(22, 160, 8)]
-        spots += [Spot(middle, y1 - step, 0, -1) for step in range(8, 160, 8)]
+        spots += [Spot(middle, y1 - step, 0, -1) for step in range(8, 160, 8)] + around
     elif on_body:  # a place on the body: the arrow is there, the text beside the body
         here = geometry.points.rest[geometry.centres[body]] + geometry.view.steps(arm)
         segments = _at_place(here, None if turning else _step(geometry, way))

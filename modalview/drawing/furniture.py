@@ -15,7 +15,13 @@ GRID_STEP = 24.0
 MARGIN = 12.0
 CAPTION = 28.0  # height of the strip below a picture that says what it shows
 TWO_LINES = 0.6  # of the block: a title wider than this at the smaller size stands in two lines
-SECOND = 15.0  # height of the second line
+ROW, SECOND = 35.0, 15.0  # height of a row, and of the second line in one
+BLOCK = 2 * ROW
+STRIP = 21.0  # height of the block as a strip of one line
+MOST_SHARE = 0.13  # of the sheet: a block that would take more is a strip
+PADDING = 14.0  # of a cell, both sides
+AXES = 60.0  # pixels that the axes keep beside the strip
+TURNING = "rotation about the shafts"
 TITLE_SHARE = (0.45, 0.68)  # of the block, for the left column: least and most
 
 
@@ -49,18 +55,28 @@ def title_lines(model: Model, *, checked: str = "not yet", freedoms: int | None 
     return TitleLines(model.title or "untitled", revision, f"{model.motion} · {freedoms} DOF", checked)
 
 
-def title_size(title: str, sheet_width: float, text_scale: float) -> tuple[float, float]:
-    """Return width and height of the title block in pixels: wide enough for the title, to half the sheet."""
+def title_size(title: str, sheet: tuple[float, float], text_scale: float) -> tuple[float, float]:
+    """Return width and height of the title block in pixels, on a sheet of a width and height.
+
+    It is wide enough for the title, to three fifths of the sheet. Where it would take too much of the sheet
+    it is a strip of one line.
+    """
     need = (text_width(title, text_scale=text_scale) + 20.0) / TITLE_SHARE[1]
-    width = min(max(need, 330.0 * text_scale), max(0.6 * sheet_width, 200.0), sheet_width - 2 * MARGIN)
+    width = min(max(need, 330.0 * text_scale), max(0.6 * sheet[0], 200.0), sheet[0] - 2 * MARGIN)
     two = text_width(title, Size.SMALL, text_scale=text_scale) > TWO_LINES * width - 14.0
-    return width, (68.0 + (SECOND if two else 0.0)) * text_scale
+    height = (BLOCK + (SECOND if two else 0.0)) * text_scale
+    if width * height > MOST_SHARE * sheet[0] * sheet[1]:
+        return max(sheet[0] - 2 * MARGIN - AXES, 100.0), STRIP * text_scale
+    return width, height
 
 
-def title_block(lines: TitleLines, sheet_width: float, text_scale: float) -> tuple[Item, ...]:
+def title_block(lines: TitleLines, sheet: tuple[float, float], text_scale: float) -> tuple[Item, ...]:
     """Return the title block at the top right of a sheet, as wide as its longest texts, two by two."""
-    width, height = title_size(lines.title, sheet_width, text_scale)
-    left, top = sheet_width - MARGIN - width, MARGIN
+    width, height = title_size(lines.title, sheet, text_scale)
+    right = sheet[0] - MARGIN
+    if height < BLOCK * text_scale:
+        return _strip(lines, right, width, text_scale)
+    left, top = right - width, MARGIN
     wide, narrow = (
         max(text_width(text, text_scale=text_scale) for text in column) + 16.0
         for column in ((lines.title, lines.motion), (lines.revision, lines.checked))
@@ -68,37 +84,57 @@ def title_block(lines: TitleLines, sheet_width: float, text_scale: float) -> tup
     share = min(max(wide / (wide + narrow), TITLE_SHARE[0]), TITLE_SHARE[1])
     # The verdict is never cut short: the title gives way.
     least = text_width(lines.checked, Size.SMALL, text_scale=text_scale) + 16.0
-    share = min(share, 1.0 - least / width)
-    split, middle = left + share * width, top + height - 34.0 * text_scale
-    cross = np.array([[left, middle, left + width, middle], [split, top, split, top + height]])
+    rooms = _two_columns(min(share, 1.0 - least / width) * width, width)
+    above, below = (lines.title, lines.revision), (lines.motion, lines.checked)
+    fits = all(
+        text_width(text, text_scale=text_scale) <= room
+        for row in (above, below)
+        for text, room in zip(row, rooms, strict=True)
+    )
+    size = Size.NORMAL if fits else Size.SMALL
+    broken = [
+        in_two(text, room, text_scale) if not fits and height > BLOCK * text_scale else (text,)
+        for text, room in zip(above, rooms, strict=True)
+    ]
+    first = (ROW + SECOND * (max(map(len, broken)) - 1)) * text_scale
+    split, middle, bottom = left + rooms[0] + PADDING, top + first, top + first + ROW * text_scale
+    cross = np.array([[left, middle, right, middle], [split, top, split, bottom]])
     items: list[Item] = [
-        Box(left, top, width, height, 0.0, Role.INK, Role.PAPER, 1.2),
+        Box(left, top, width, bottom - top, 0.0, Role.INK, Role.PAPER, 1.2),
         Lines(cross, Role.INK, 1.0),
     ]
     cells = (
-        ("title", lines.title, left, top, share * width),
-        ("revision", lines.revision, split, top, (1 - share) * width),
-        ("motion", lines.motion, left, middle, share * width),
-        ("checked", lines.checked, split, middle, (1 - share) * width),
+        ("title", broken[0], left, top, rooms[0]),
+        ("revision", broken[1], split, top, rooms[1]),
+        ("motion", (lines.motion,), left, middle, rooms[0]),
+        ("checked", (lines.checked,), split, middle, rooms[1]),
     )
-    for name, text, x, y, room in cells:
-        inner = room - 14.0
-        size = Size.NORMAL if text_width(text, text_scale=text_scale) <= inner else Size.SMALL
-        rows: tuple[str, ...] = (text,)
-        if y == top and height > 70.0 * text_scale:
-            rows = in_two(text, inner, text_scale)
+    for name, rows, x, y, room in cells:
         items.append(Text(x + 8, y + 9.0 * text_scale, name, Role.MUTED, Size.SMALL))
-        items += [
-            Text(
-                x + 8,
-                y + (24.0 + SECOND * row) * text_scale,
-                shortened(part, inner, size, text_scale),
-                Role.INK,
-                size,
-            )
-            for row, part in enumerate(rows)
-        ]
+        for row, part in enumerate(rows):
+            text = shortened(part, room, size, text_scale)
+            items.append(Text(x + 8, y + (24.0 + SECOND * row) * text_scale, text, Role.INK, size))
     return tuple(items)
+
+
+def _two_columns(split: float, width: float) -> tuple[float, float]:
+    return split - PADDING, width - split - PADDING
+
+
+def _strip(lines: TitleLines, right: float, most: float, text_scale: float) -> tuple[Item, ...]:
+    """Return title and verdict beside each other on one line."""
+    size, height = Size.SMALL, STRIP * text_scale
+    checked = text_width(lines.checked, size, text_scale=text_scale) + PADDING
+    title = shortened(lines.title, max(most - checked - PADDING, 0.0), size, text_scale)
+    split = right - checked
+    left = split - text_width(title, size, text_scale=text_scale) - PADDING
+    middle = MARGIN + height / 2
+    return (
+        Box(left, MARGIN, right - left, height, 0.0, Role.INK, Role.PAPER, 1.2),
+        Lines(np.array([[split, MARGIN, split, MARGIN + height]]), Role.INK, 1.0),
+        Text(left + 8, middle, title, Role.INK, size),
+        Text(split + 8, middle, lines.checked, Role.INK, size),
+    )
 
 
 def grid(width: float, height: float) -> Lines:
@@ -110,8 +146,12 @@ def grid(width: float, height: float) -> Lines:
     return Lines(np.vstack([upright, level]), Role.GRID, 1.0)
 
 
-def axes(motion: Motion, text_scale: float) -> tuple[tuple[Item, ...], Floats]:
-    """Return the arrows of the model's axes at the top left, and the rectangle (1, 4) they take."""
+def axes(motion: Motion, text_scale: float, room: float = np.inf) -> tuple[tuple[Item, ...], Floats]:
+    """Return the arrows of the model's axes at the top left, and the rectangle (1, 4) they take.
+
+    What is said beside the axis of a shaft train is left out where it would pass ``room``, pixels from the
+    left.
+    """
     length = 34.0
     shown = {
         Motion.SINGLE_AXIS: ("y",),
@@ -127,12 +167,13 @@ def axes(motion: Motion, text_scale: float) -> tuple[tuple[Item, ...], Floats]:
     for name, step in zip(shown, steps, strict=True):
         x, y = origin + step * (1 + 9.0 * text_scale / max(float(np.hypot(*step)), 1.0))
         items.append(Text(float(x), float(y), name, Role.INK, Size.SMALL, Anchor.MIDDLE))
-    if motion is Motion.SHAFT_TRAIN:
-        x = float(origin[0] + length + 22 * text_scale)
-        items.append(Text(x, float(origin[1]), "rotation about the shafts", Role.MUTED, Size.SMALL))
     high = origin + np.maximum(steps.max(axis=0), 0.0) + 20.0 * text_scale
     if motion is Motion.SHAFT_TRAIN:
-        high[0] += text_width("rotation about the shafts", Size.SMALL, text_scale=text_scale)
+        x = float(origin[0] + length + 22 * text_scale)
+        wide = text_width(TURNING, Size.SMALL, text_scale=text_scale)
+        if x + wide <= room:
+            items.append(Text(x, float(origin[1]), TURNING, Role.MUTED, Size.SMALL))
+            high[0] += wide
     return tuple(items), np.array([[0.0, 0.0, *high]])
 
 

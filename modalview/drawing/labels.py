@@ -37,6 +37,37 @@ class Spot:
     down: int
 
 
+@dataclass(frozen=True, slots=True, eq=False)
+class Owner:
+    """What a label belongs to, and what it could be taken to belong to: it stands nearer to the first.
+
+    Parameters
+    ----------
+    own : array (m, 4)
+        x1, y1, x2, y2 of its own part.
+    others : array (n, 4)
+        Of the other parts of the same kind.
+    """
+
+    own: Floats
+    others: Floats
+
+    def owns(self, boxes: Floats) -> Truths:
+        """Return which of the boxes (k, 4) stand nearer to the own part than to any other."""
+        if not len(self.others):
+            return np.ones(len(boxes), dtype=bool)
+        return np.asarray(_distance(boxes, self.own) <= _distance(boxes, self.others))
+
+
+def _distance(boxes: Floats, parts: Floats) -> Floats:
+    """Return how far each box (k, 4) is from the nearest of the parts (n, 4)."""
+    x1, y1, x2, y2 = (boxes[:, side, None] for side in range(4))
+    left, top, right, bottom = parts.T
+    across = np.maximum(np.maximum(left - x2, x1 - right), 0.0)
+    up = np.maximum(np.maximum(top - y2, y1 - bottom), 0.0)
+    return np.asarray(np.hypot(across, up).min(axis=1))
+
+
 class Board:
     """Rectangles that are taken, and the sheet that labels must stay on."""
 
@@ -66,6 +97,7 @@ class Board:
         *,
         within: Rectangle | None = None,
         sway: tuple[float, float] = (0.0, 0.0),
+        owner: Owner | None = None,
     ) -> list[Text]:
         """Put a label at the first free spot and take its room; nothing when none is free.
 
@@ -78,6 +110,8 @@ class Board:
             Where the label must lie; None is the sheet.
         sway : pair of float
             Pixels that the label moves with its body across and up, to both sides; that room is kept too.
+        owner : Owner or None
+            What the label belongs to: spots nearer to something else are passed over.
         """
         if not spots:
             return []
@@ -91,6 +125,8 @@ class Board:
         near = self._near(boxes[free])
         for some in np.array_split(free, range(_BATCH, len(free), _BATCH)):
             clear = some[~_meet(boxes[some], near)]
+            if owner is not None and len(clear):
+                clear = clear[owner.owns(boxes[clear])]
             if len(clear):
                 first = int(clear[0])
                 self.take(boxes[first : first + 1] + np.array([-3.0, -1.0, 3.0, 1.0]))

@@ -10,7 +10,17 @@ from modalview.drawing.captions import body_lines, link_lines
 from modalview.drawing.excitations import Push, pushes
 from modalview.drawing.furniture import MARGIN, axes, title_size
 from modalview.drawing.geometry import TWIST, SheetGeometry
-from modalview.drawing.labels import Board, Line, Rectangle, Spot, along, extent, ring_about, round_about
+from modalview.drawing.labels import (
+    Board,
+    Line,
+    Owner,
+    Rectangle,
+    Spot,
+    along,
+    extent,
+    ring_about,
+    round_about,
+)
 from modalview.drawing.layout import GROUND
 from modalview.drawing.primitives import Floats, Role, Size, Text
 from modalview.model.parts import Motion
@@ -39,6 +49,8 @@ class _Letters:
     body_labels: list[tuple[int, Text]]
     leaders: list[tuple[float, float, float, float]]
     unlabelled: list[str]
+    along_links: tuple[Floats, Indices]  # rectangles along the links, and the link of each
+    board: Board  # what is taken outside of bodies
 
 
 def lettered(geometry: SheetGeometry) -> SheetGeometry:
@@ -47,15 +59,17 @@ def lettered(geometry: SheetGeometry) -> SheetGeometry:
     acting = pushes(geometry)
     board.take(np.vstack([_taken(geometry), *(push.box for push in acting)]))
     inner.take(np.vstack([_taken_inside(geometry), *(push.box for push in acting)]))
-    letters = _Letters([], [], [], [])
+    letters = _Letters([], [], [], [], _link_boxes(geometry), board)
     _name_bodies(geometry, board, inner, letters)
+    _name_pushes(geometry, acting, (board, inner), letters)
+    up = np.array([0.0, -1.0, 0.0, 1.0]) * USUAL * geometry.reach
     if geometry.model.motion is Motion.PLANE:
         board.take(geometry.boxes + np.array([-SWAY, 0.0, SWAY, 0.0]))
-    elif geometry.model.motion is Motion.SINGLE_AXIS and geometry.text_scale > LARGE_TEXT:
-        up = USUAL * geometry.reach
-        board.take(geometry.boxes + np.array([0.0, -up, 0.0, up]))
-    _name_links(geometry, board, letters)
-    _name_pushes(geometry, acting, (board, inner), letters)
+    elif geometry.model.motion is Motion.SINGLE_AXIS:
+        board.take(np.vstack([np.zeros((0, 4)), *(push.box + up for push in acting)]))
+        if geometry.text_scale > LARGE_TEXT:
+            board.take(geometry.boxes + up)
+    _name_links(geometry, letters)
     return replace(
         geometry,
         labels=tuple(letters.labels),
@@ -68,9 +82,11 @@ def lettered(geometry: SheetGeometry) -> SheetGeometry:
 
 def _taken(geometry: SheetGeometry) -> Floats:
     """Return the rectangles that texts outside of bodies keep clear of."""
-    width, height = title_size(geometry.model.title, geometry.width, geometry.text_scale)
+    sheet = (geometry.width, geometry.height)
+    width, height = title_size(geometry.model.title, sheet, geometry.text_scale)
     corner = [geometry.width - MARGIN - width - 4, 0.0, geometry.width, MARGIN + height + 4]
-    taken = [np.array([corner]), axes(geometry.model.motion, geometry.text_scale)[1], geometry.boxes]
+    arrows = axes(geometry.model.motion, geometry.text_scale, corner[0])[1]
+    taken = [np.array([corner]), arrows, geometry.boxes]
     taken += [_link_boxes(geometry)[0], _foot_boxes(geometry)]
     train = geometry.train
     if train is None:
@@ -141,9 +157,10 @@ def _name_bodies(geometry: SheetGeometry, board: Board, inner: Board, letters: _
             placed = _by_body(geometry, (board, inner), number, title)
         if not placed and not many and len(geometry.model.bodies) <= CROWD:
             middle = geometry.boxes[number].reshape(2, 2).mean(axis=0)
-            placed = board.place(title, ring_about(*middle.tolist()), sway=_sway(geometry))
+            owner = _owner(geometry.boxes, number)
+            placed = board.place(title, ring_about(*middle.tolist()), sway=_sway(geometry), owner=owner)
             near = round_about(_rectangle(geometry.boxes[number]), 6.0)
-            placed = placed or board.place((replace(title[0], size=Size.SMALL),), near)
+            placed = placed or board.place((replace(title[0], size=Size.SMALL),), near, owner=owner)
         letters.body_labels += [(number, text) for text in placed]
         if not placed:
             letters.unlabelled.append(body.id)
@@ -173,7 +190,13 @@ def _by_body(
     count = len(geometry.model.bodies)
     if count > MOST_LABELS or (count > CROWD and len(lines) > 1):
         return []
-    return board.place(lines, round_about(_rectangle(geometry.boxes[number]), 12.0), sway=_sway(geometry))
+    about = round_about(_rectangle(geometry.boxes[number]), 12.0)
+    return board.place(lines, about, sway=_sway(geometry), owner=_owner(geometry.boxes, number))
+
+
+def _owner(boxes: Floats, number: int) -> Owner:
+    """Return a part among others of its kind (n, 4)."""
+    return Owner(boxes[number : number + 1], np.delete(boxes, number, axis=0))
 
 
 def _sway(geometry: SheetGeometry) -> tuple[float, float]:
@@ -210,10 +233,14 @@ def _by_disc(geometry: SheetGeometry, number: int) -> list[Spot]:
 def _name_pushes(
     geometry: SheetGeometry, acting: tuple[Push, ...], boards: tuple[Board, Board], letters: _Letters
 ) -> None:
-    for push in acting:
+    boxes = np.vstack([np.zeros((0, 4)), *(push.box for push in acting)])
+    for number, push in enumerate(acting):
+        others = np.vstack([np.delete(boxes, number, axis=0), np.delete(geometry.boxes, push.body, axis=0)])
+        owner = Owner(np.vstack([push.box, geometry.boxes[push.body]]), others)
         lines = tuple(Line(text, Role.WARN) for text in push.texts)
         small = tuple(replace(line, size=Size.SMALL) for line in lines)
-        heads = (Line(", ".join(text.partition(",")[0] for text in push.texts), Role.WARN, Size.SMALL),)
+        names = [text.partition(",")[0] for text in push.texts]
+        heads = tuple(Line(name, Role.WARN, Size.SMALL) for name in names)
         placed: list[Text] = []
         still, sway = (0.0, 0.0), _sway(geometry)
         for some, room, far in (
@@ -223,8 +250,9 @@ def _name_pushes(
             (small, sway, True),
             (small, still, True),
             (heads, still, True),
+            ((Line(", ".join(names), Role.WARN, Size.SMALL),), still, True),
         ):
-            placed = placed or _by_push(geometry, push, boards, some, _Room(room, far))
+            placed = placed or _by_push(geometry, push, boards, some, _Room(room, far, owner))
         letters.body_labels += [(push.body, text) for text in placed]
         if not placed:
             letters.unlabelled.append(push.texts[0])
@@ -236,6 +264,7 @@ class _Room:
 
     sway: tuple[float, float]
     far: bool
+    owner: Owner
 
 
 def _by_push(
@@ -253,13 +282,13 @@ def _by_push(
     if push.on_body:
         placed = inner.place(lines, round_about((x1, y1, x2 - x1, y2 - y1), 4.0), within=within)
     spots = [*push.spots, *ring_about(x1, y1)] if room.far else list(push.spots)
-    placed = placed or board.place(lines, spots, sway=room.sway)
+    placed = placed or board.place(lines, spots, sway=room.sway, owner=room.owner)
     if placed or not room.far:
         return placed
     return inner.place(lines, _inside(within, board.size(lines)), within=within)
 
 
-def _name_links(geometry: SheetGeometry, board: Board, letters: _Letters) -> None:
+def _name_links(geometry: SheetGeometry, letters: _Letters) -> None:
     links = geometry.model.links
     if len(links) > MOST_LABELS:
         letters.unlabelled += [link.id for link in links]
@@ -272,25 +301,29 @@ def _name_links(geometry: SheetGeometry, board: Board, letters: _Letters) -> Non
         group = alike[tuple(values)]
         if len(group) > MOST_ALIKE:
             if number == group[0]:
-                _name_alike(geometry, board, letters, group, tuple(values))
+                _name_alike(geometry, letters, group, tuple(values))
             continue
-        _name_link(geometry, board, letters, number, _link_label(name, tuple(values)))
+        _name_link(geometry, letters, number, _link_label(name, tuple(values)))
 
 
-def _name_link(
-    geometry: SheetGeometry, board: Board, letters: _Letters, number: int, lines: tuple[Line, ...]
-) -> None:
+def _name_link(geometry: SheetGeometry, letters: _Letters, number: int, lines: tuple[Line, ...]) -> None:
     """Write name and values by a link; the name alone where there is no room, and for large texts far off."""
     middle = geometry.link_ends[number].mean(axis=0)
     beside = _beside(geometry, number)
-    if _placed_beside(geometry, board, letters, number, lines, beside):
+    boxes, links = letters.along_links
+    owner = Owner(boxes[links == number], boxes[links != number])
+    clear, still = _Room((0.0, _sway(geometry)[1]), False, owner), _Room((0.0, 0.0), False, owner)
+    led = replace(still, owner=Owner(owner.own, boxes[:0]))  # a leader alone tells whose the text is
+    if _placed_beside(geometry, letters, number, lines, beside, clear):
         return
     far = _free_of_texts(geometry, letters, middle, ring_about(*middle.tolist()))
-    tries = [(lines[:1], beside), (lines[:1], far)]
+    whole, name = lines, lines[:1]
+    tries = [(whole, beside, still), (name, beside, still), (name, far, still), (name, far, led)]
     if geometry.text_scale <= LARGE_TEXT:
-        tries.insert(0, (lines, far))
-    for some, spots in tries:
-        if _placed_beside(geometry, board, letters, number, some, spots):
+        first = [(whole, far, clear), (name, beside, clear)]
+        tries = [*first, tries[0], (whole, far, still), *tries[1:3], (whole, far, led), tries[3]]
+    for some, spots, room in tries:
+        if _placed_beside(geometry, letters, number, some, spots, room):
             return
     letters.unlabelled.append(geometry.model.links[number].id)
 
@@ -315,15 +348,15 @@ def _free_of_texts(
 
 def _placed_beside(
     geometry: SheetGeometry,
-    board: Board,
     letters: _Letters,
     number: int,
     lines: tuple[Line, ...],
     spots: list[Spot],
+    room: "_Room",
 ) -> bool:
     """Write lines by a link, with a leader where they stand apart; tell whether there was room."""
     middle = geometry.link_ends[number].mean(axis=0)
-    placed = board.place(lines, spots)
+    placed = letters.board.place(lines, spots, sway=room.sway, owner=room.owner)
     letters.labels += placed
     if placed:
         x1, y1, x2, y2 = extent(placed, geometry.text_scale)
@@ -334,18 +367,20 @@ def _placed_beside(
 
 
 def _name_alike(
-    geometry: SheetGeometry, board: Board, letters: _Letters, group: list[int], values: tuple[str, ...]
+    geometry: SheetGeometry, letters: _Letters, group: list[int], values: tuple[str, ...]
 ) -> None:
     """Write the values of links that share them once, at the first with room for it."""
     kind = geometry.model.links[group[0]].kind
     lines = _link_label(f"each of {len(group)} {kind}s", values)
+    boxes, links = letters.along_links
+    alike = np.isin(links, group)
+    room = _Room((0.0, 0.0), False, Owner(boxes[alike], boxes[~alike]))
     for number in group:
-        spots = _beside(geometry, number)
-        if _placed_beside(geometry, board, letters, number, lines, spots):
+        if _placed_beside(geometry, letters, number, lines, _beside(geometry, number), room):
             return
     for number in group[:ALIKE_TRIES]:
         spots = ring_about(*geometry.link_ends[number].mean(axis=0).tolist())
-        if _placed_beside(geometry, board, letters, number, lines, spots):
+        if _placed_beside(geometry, letters, number, lines, spots, room):
             return
     letters.unlabelled += [geometry.model.links[number].id for number in group]
 

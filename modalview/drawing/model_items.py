@@ -4,7 +4,7 @@ from dataclasses import replace
 
 import numpy as np
 
-from modalview.drawing.furniture import TitleLines, axes, grid, title_block
+from modalview.drawing.furniture import MARGIN, TitleLines, axes, grid, title_block, title_size
 from modalview.drawing.geometry import LinkGroup, SheetGeometry
 from modalview.drawing.layout import GROUND
 from modalview.drawing.primitives import Circles, Floats, Item, Lines, Polygons, Role
@@ -108,10 +108,12 @@ def axis_items(geometry: SheetGeometry) -> tuple[Item, ...]:
 
 def paper_items(geometry: SheetGeometry, title: TitleLines | None) -> tuple[Item, ...]:
     """Return grid, axes, title block and excitation arrows."""
-    shown = (grid(geometry.width, geometry.height), *axes(geometry.model.motion, geometry.text_scale)[0])
+    sheet, text_scale = (geometry.width, geometry.height), geometry.text_scale
+    room = geometry.width
     if title is not None:
-        shown += title_block(title, geometry.width, geometry.text_scale)
-    return shown
+        room -= MARGIN + title_size(title.title, sheet, text_scale)[0]
+    shown = (grid(*sheet), *axes(geometry.model.motion, text_scale, room)[0])
+    return shown if title is None else shown + title_block(title, sheet, text_scale)
 
 
 def leader_items(geometry: SheetGeometry) -> tuple[Item, ...]:

@@ -23,7 +23,11 @@ from modalview.model.parts import Model
 __all__ = ["SheetGeometry", "TitleLines", "part_at", "sheet_drawing", "sheet_geometry", "title_lines"]
 
 SIDE, BOTTOM = 110.0, 46.0  # pixels kept free for labels, and for ground
-ARROWS = 62.0  # pixels that excitation arrows take above a body, its motion included
+ARROWS, SPARE = (
+    92.0,
+    32.0,
+)  # pixels above a body for excitation arrows and their motion; what they can do without
+LEAST_ARROWS = 0.22  # of the height of a low sheet
 # Of the sheet, what the model is fitted into at least: labels fall away before it shrinks.
 LEAST_WIDE, LEAST_HIGH = 0.6, 0.5
 NEAR_LINK = 9.0  # pixels: how close to a link's line a click may be
@@ -44,9 +48,9 @@ def sheet_geometry(
         None fits the model; else what ``geometry.view.panned`` or ``zoomed`` gave.
     """
     side = min(SIDE * text_scale, (1 - LEAST_WIDE) / 2 * width)
-    block = MARGIN + title_size(model.title, width, text_scale)[1]
-    arrows = (74.0 if lines_above(model) else 8.0) + 17.0 * lines_above(model) * text_scale
-    least = block + (ARROWS if lines_above(model) else 4.0)
+    block = MARGIN + title_size(model.title, (width, height), text_scale)[1]
+    arrows = (ARROWS if lines_above(model) else 8.0) + 17.0 * lines_above(model) * text_scale
+    least = block + min(arrows - SPARE, LEAST_ARROWS * height) if lines_above(model) else block + 4.0
     top = min(block + arrows, max((1 - LEAST_HIGH) * height - BOTTOM, least))
     area = (side, top, max(width - 2 * side, 40.0), max(height - top - BOTTOM, 40.0))
     return lettered(bare_geometry(model, (width, height), area, view, 1.0, text_scale))

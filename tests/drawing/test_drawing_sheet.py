@@ -3,11 +3,14 @@ from dataclasses import replace
 import numpy as np
 import pytest
 
-from modalview.drawing.furniture import title_lines
+from modalview.drawing.furniture import MARGIN, title_block, title_lines, title_size
 from modalview.drawing.labels import extent
-from modalview.drawing.primitives import Drawing, Lines, Text
+from modalview.drawing.lettering import USUAL
+from modalview.drawing.primitives import Box, Drawing, Lines, Role, Text
 from modalview.drawing.sheet import SheetGeometry, part_at, sheet_drawing, sheet_geometry
 from modalview.model.parts import Model
+from modalview.places import demo_models
+from modalview.store.reading import read_model
 
 SIZES = [(720.0, 540.0), (1000.0, 700.0)]
 
@@ -54,6 +57,59 @@ def test_every_part_of_demo_models_is_on_the_sheet(demo_model: Model):
     for corners in (geometry.boxes.reshape(-1, 2), geometry.link_ends.reshape(-1, 2)):
         assert (corners >= 0).all()
         assert (corners <= [720, 540]).all()
+
+
+def _apart(one: tuple[float, ...], other: tuple[float, ...]) -> float:
+    across = max(other[0] - one[2], one[0] - other[2], 0.0)
+    return float(np.hypot(across, max(other[1] - one[3], one[1] - other[3], 0.0)))
+
+
+@pytest.mark.parametrize("size", [(550.0, 330.0), (658.0, 430.0), (720.0, 540.0)])
+@pytest.mark.parametrize("text_scale", [1.0, 2.0])
+def test_names_stand_nearest_to_their_own_body(
+    demo_model: Model, size: tuple[float, float], text_scale: float
+):
+    geometry = sheet_geometry(demo_model, *size, text_scale=text_scale)
+    boxes = [tuple(box) for box in geometry.boxes.tolist()]
+    names = [body.name or body.id for body in demo_model.bodies]
+    for number, label in geometry.body_labels:
+        if label.text in names:
+            place = extent([label], text_scale)
+            nearest = min(_apart(place, box) for box in boxes)
+            assert _apart(place, boxes[number]) <= nearest + 1.0 or geometry.train is not None
+
+
+def test_each_arrow_has_its_own_text_beside_it_on_a_low_sheet():
+    model = read_model(demo_models() / "1-cooling-water-pump" / "as-built.keepclear")
+    geometry = sheet_geometry(model, 658, 330)
+    motor, pump = geometry.boxes[:2].tolist()
+    texts = {label.text.partition(",")[0]: label for _, label in geometry.body_labels}
+    for name, own, other in (("1× unbalance", motor, pump), ("7× vane pass", pump, motor)):
+        place = extent([texts[name]], 1.0)
+        assert _apart(place, tuple(own)) < _apart(place, tuple(other))
+
+
+def test_what_moves_with_a_body_stays_off_the_title_block():
+    model = read_model(demo_models() / "1-cooling-water-pump" / "as-built.keepclear")
+    geometry = sheet_geometry(model, 658, 430)
+    bottom = MARGIN + title_size(model.title, (658, 430), 1.0)[1]
+    for _, label in geometry.body_labels:
+        assert extent([label], 1.0)[1] - USUAL * geometry.reach > bottom
+
+
+def test_a_title_block_that_would_fill_the_sheet_is_a_strip_with_the_verdict(demo_model: Model):
+    lines = title_lines(demo_model, checked="mode in band")
+    for size, text_scale in (((740.0, 500.0), 2.0), ((400.0, 260.0), 1.0)):
+        items = title_block(lines, size, text_scale)
+        (box,) = (item for item in items if isinstance(item, Box))
+        assert box.width * box.height < 0.13 * size[0] * size[1]
+        assert box.x >= 60
+        assert "mode in band" in {item.text for item in items if isinstance(item, Text)}
+
+
+def test_the_title_block_writes_all_its_texts_in_one_size(demo_model: Model):
+    items = title_block(title_lines(demo_model, checked="clear at nominal only"), (660.0, 430.0), 1.0)
+    assert len({item.size for item in items if isinstance(item, Text) and item.role is Role.INK}) == 1
 
 
 def test_larger_texts_still_fit(demo_model: Model):
