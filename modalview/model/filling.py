@@ -14,7 +14,7 @@ from modalview.model.composites import is_composite, read_composite
 from modalview.model.differences import Rewrite, checked_edit
 from modalview.model.edits import retyped, typed_number
 from modalview.model.fields import Field, Shape, fields_of, quantity_in
-from modalview.model.parts import End, InertiaTensor, Model, Motion, SpeedRange
+from modalview.model.parts import Model, Motion
 from modalview.model.tolerance_text import typed_entry, typed_tolerance
 from modalview.model.values import Entry, Tolerance, Value
 from modalview.units.quantities import Quantity
@@ -180,16 +180,13 @@ def _made(model: Model, address: Address, items: dict[str | int, Any]) -> Any:
 
 
 def _without_empty(model: Model, owners: list[Address]) -> Model:
-    """Take away records that hold nothing any more, such as the damping of a mount."""
+    """Take away records that hold nothing any more, such as the damping of a mount; parts of lists stay."""
     for address in dict.fromkeys(owners):
-        owner = look(model, address)
-        if (
-            len(address) > 2
-            and is_dataclass(owner)
-            and not isinstance(owner, End | InertiaTensor | SpeedRange)
-        ):
-            kind: type = type(owner)
-            optional = not field_named(type(look(model, address[:-1])), address[-1]).required
-            if optional and all(getattr(owner, one.name) is None for one in fields_of(kind)):
-                model = put(model, address, None)
+        owner, above = look(model, address), look(model, address[:-1])
+        if not is_dataclass(owner) or isinstance(above, tuple):
+            continue
+        kind: type = type(owner)
+        optional = not field_named(type(above), address[-1]).required
+        if optional and all(getattr(owner, one.name) is None for one in fields_of(kind)):
+            model = put(model, address, None)
     return model

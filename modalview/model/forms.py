@@ -174,7 +174,8 @@ def part_of(model: Model, part_id: str) -> tuple[Address, Body | Support | Link 
 def kind_of(part: Body | Support | Link | Machine) -> str:
     """Return what a part is called by kind."""
     if isinstance(part, Body):
-        return "body"
+        massless = part.mass is not None and part.mass.si == 0 and part.inertia is None
+        return "junction" if massless else "body"
     if isinstance(part, Support):
         return "support"
     return "machine" if isinstance(part, Machine) else part.kind

@@ -1,6 +1,6 @@
 """A form that floats on the sheet beside what it is about, and keeps keys and mouse from the sheet below."""
 
-from PySide6.QtCore import QRect, QSize, Qt, Signal
+from PySide6.QtCore import QRect, QSize, Qt, QTimer, Signal
 from PySide6.QtGui import QKeyEvent
 from PySide6.QtWidgets import (
     QFrame,
@@ -65,9 +65,9 @@ class FloatingForm(QFrame):
         self.close_button = QToolButton(self, text="\u00d7", accessibleName="close the form")
         self.close_button.setToolTip("Close (Esc)")
         self.close_button.clicked.connect(self.hide_form)
-        head = QHBoxLayout()
-        head.addWidget(self.title, 1)
-        head.addWidget(self.close_button)
+        self._head = QHBoxLayout()
+        self._head.addWidget(self.title, 1)
+        self._head.addWidget(self.close_button)
         self.inside = QWidget(self, objectName="floatingFormInside")
         self.grid = QGridLayout(self.inside)
         self.grid.setContentsMargins(0, 0, 4, 0)
@@ -84,7 +84,7 @@ class FloatingForm(QFrame):
         layout = QVBoxLayout(self)
         layout.setContentsMargins(10, 6, 8, 8)
         layout.setSpacing(5)
-        layout.addLayout(head)
+        layout.addLayout(self._head)
         layout.addWidget(self.scroll, 1)
         layout.addLayout(self.foot)
         self.hide()
@@ -95,29 +95,36 @@ class FloatingForm(QFrame):
         self.show()
         self.raise_()
         self.fit()
+        QTimer.singleShot(0, self, self.fit)  # new widgets know their size once they are shown
 
     def fit(self) -> None:
         """Take the size that the lines need, and the place for it."""
         if self.isHidden():
             return
         room = self.parentWidget().rect().adjusted(_EDGE, _EDGE, -_EDGE, -_EDGE)
-        self.inside.ensurePolished()
-        self.grid.activate()
-        wanted = self.inside.sizeHint()
-        across = self.layout().contentsMargins()
-        bar = self.scroll.verticalScrollBar().sizeHint().width()
-        head_and_foot = self.layout().sizeHint().height() - self.scroll.sizeHint().height()
-        height = head_and_foot + self._height_for(wanted.width())
-        width = wanted.width() + across.left() + across.right() + 2 * self.frameWidth()
-        if height > room.height():
-            width += bar
-        width = max(width, self.layout().minimumSize().width())
-        size = QSize(min(width, room.width()), min(height, room.height()))
-        self.setGeometry(place_beside(size, self._beside, room))
+        self.grid.invalidate()
+        margins = self.layout().contentsMargins()
+        across = margins.left() + margins.right() + 2 * self.frameWidth()
+        width = max(self.grid.sizeHint().width() + across, self.layout().minimumSize().width())
+        width = min(width, room.width())
+        height = self._height_for(width - across)
+        # A scroll area that once had a bar keeps it where texts wrap: without it they would just fit.
+        policy = Qt.ScrollBarPolicy
+        fits = height <= room.height()
+        self.scroll.setVerticalScrollBarPolicy(
+            policy.ScrollBarAlwaysOff if fits else policy.ScrollBarAsNeeded
+        )
+        if not fits:
+            width = min(width + self.scroll.verticalScrollBar().sizeHint().width(), room.width())
+        self.setGeometry(place_beside(QSize(width, min(height, room.height())), self._beside, room))
 
-    def _height_for(self, width: int) -> int:
-        height = self.grid.heightForWidth(width) if self.grid.hasHeightForWidth() else -1
-        return max(height, 0) or self.inside.sizeHint().height()
+    def _height_for(self, inner_width: int) -> int:
+        """Return the height of the whole form when its lines are so wide; texts are broken into lines."""
+        margins = self.layout().contentsMargins()
+        around = margins.top() + margins.bottom() + 2 * self.layout().spacing() + 2 * self.frameWidth()
+        around += self._head.sizeHint().height() + self.foot.sizeHint().height()
+        lines = self.grid.totalHeightForWidth(inner_width) if self.grid.hasHeightForWidth() else -1
+        return around + (lines if lines >= 0 else self.grid.sizeHint().height())
 
     def hide_form(self) -> None:
         """Close, and give the keyboard back to the sheet."""

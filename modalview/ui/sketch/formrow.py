@@ -134,9 +134,13 @@ class ChosenWord(QComboBox):
 class FormRow:
     """The widgets of one line, put into the grid of a form."""
 
-    def __init__(self, line: FormLine, of: str, commit: Commit, parent: QWidget) -> None:
+    def __init__(
+        self, line: FormLine, of: str, commit: Commit, grown: Callable[[], None], parent: QWidget
+    ) -> None:
         self.key = line.key
+        self._wide = line.quantity is None and not line.choices  # texts have no converted value, no tolerance
         self._parent = parent
+        self._grown = grown
         named = f"{line.label} of {of}"
         self.label = QLabel(line.label, parent)
         self.label.setProperty("role", "quiet")
@@ -178,8 +182,11 @@ class FormRow:
     def place(self, grid: QGridLayout, row: int) -> int:
         """Put the widgets into a grid; return the row after them."""
         grid.addWidget(self.label, row, 0)
-        grid.addWidget(self.value, row, 1)
-        grid.addWidget(self.converted, row, 2)
+        if self._wide:
+            grid.addWidget(self.value, row, 1, 1, 3)
+        else:
+            grid.addWidget(self.value, row, 1)
+            grid.addWidget(self.converted, row, 2)
         grid.addWidget(self.tolerance, row, 3)
         grid.addWidget(self.source, row + 1, 1, 1, 2)
         grid.addWidget(self.status, row + 1, 3)
@@ -205,7 +212,7 @@ class FormRow:
             self.value.show_word(line.text, SEVERAL if several else "")
         else:
             self.value.show_text(line.text, SEVERAL if several else line.hint)
-        self.converted.setText(converted)
+        self.converted.setText("" if converted == line.text else converted)
         self.tolerance.show_text(line.tolerance, exact)
         self.tolerance.setVisible(line.tolerance_address is not None)
         self.source.show_text(line.source, "where it comes from")
@@ -222,7 +229,7 @@ class FormRow:
     def fold(self, *, away: bool) -> None:
         """Hide a line that is folded away, or show it again."""
         for widget in (self.label, self.value, self.converted):
-            widget.setVisible(not away)
+            widget.setVisible(not away and not (widget is self.converted and self._wide))
         self.reason.setVisible(not away and bool(self.reason.text()))
         if away:
             for field in self.fields[1:]:
@@ -239,3 +246,4 @@ class FormRow:
         self.reason.style().polish(self.reason)
         self.reason.setText(words)
         self.reason.setVisible(bool(words))
+        self._grown()

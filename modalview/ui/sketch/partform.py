@@ -16,6 +16,7 @@ from modalview.ui.sketch.floating import FloatingForm
 from modalview.ui.sketch.formrow import SOURCE, STATUS, TOLERANCE, VALUE, FormRow, TypedLine
 from modalview.ui.values import converted, inherited
 
+_IN_SYSTEM = {"SI": "in SI", "mm-t": "in mm and t", "inch-pound": "in inch and lb"}
 Typed = list[tuple[Address, str]]
 
 
@@ -34,6 +35,11 @@ class PartForm(FloatingForm):
         self._rows: list[FormRow] = []
         self._sections: dict[str, QLabel] = {}
         self._waiting: dict[str, str] = {}  # texts of lines that need others too, by key
+        self._heads = [QLabel(self.inside) for _ in range(2)]
+        for column, head in enumerate(self._heads, start=2):
+            head.setProperty("role", "small")
+            self.grid.addWidget(head, 0, column)
+        self._heads[1].setText("tolerance")
         self.more = self._switch("place and more")
         self.sources = self._switch("source and status")
         self.foot.addStretch(1)
@@ -127,14 +133,14 @@ class PartForm(FloatingForm):
             self._read()
         except LookupError:
             self._lines = []
-        at = 0
+        at = 1
         for lines in self._lines:
             section = lines[0].section
             if section and section not in self._sections:
                 self._sections[section] = self._heading(section)
                 self.grid.addWidget(self._sections[section], at, 0, 1, 4)
                 at += 1
-            row = FormRow(lines[0], self._named(), self._committer(lines[0].key), self.inside)
+            row = FormRow(lines[0], self._named(), self._committer(lines[0].key), self.fit, self.inside)
             at = row.place(self.grid, at)
             self._rows.append(row)
         self._order()
@@ -186,6 +192,10 @@ class PartForm(FloatingForm):
         self.title.setText(self._title())
         for row, lines in zip(self._rows, self._lines, strict=True):
             self._show_row(row, lines)
+        self._heads[0].setText(_IN_SYSTEM[self._system])
+        shown = [row for row in self._rows if not row.value.isHidden()]
+        self._heads[0].setVisible(any(row.converted.text() for row in shown))
+        self._heads[1].setVisible(any(not row.tolerance.isHidden() for row in shown))
         self.more.setVisible(any(lines[0].more for lines in self._lines))
         self.sources.setVisible(any(lines[0].noted for lines in self._lines))
         for section, label in self._sections.items():
