@@ -60,9 +60,11 @@ def _drawing(model: Model, words: argparse.Namespace, width: int, height: int) -
     solution = solve(Request(model, progress=progress))
     if words.of == "plane":
         damping = damped(Request(model), solution)
-        return plane_drawing(plane_content(solution.outlook, solution, damping), width, height)
+        plane = plane_drawing(plane_content(solution.outlook, solution, damping), width, height - CAPTION)
+        return captioned(plane, f"Complex plane · {model.title or 'untitled'}")
     if words.of == "scale":
-        return scale_drawing(scale_content(solution.outlook, solution), width, height).drawing
+        scale = scale_drawing(scale_content(solution.outlook, solution), width, height - CAPTION)
+        return captioned(scale.drawing, f"Frequency scale · {model.title or 'untitled'}")
     mode = wanted_mode(solution, words.mode)
     geometry = sheet_geometry(model, width, height - CAPTION)
     drawing = moved(geometry, mode.motion, 1.0, 0.0, _title(solution.outlook))

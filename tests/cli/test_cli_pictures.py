@@ -10,6 +10,7 @@ from modalview.errors import UsageError
 from modalview.places import demo_models
 
 PUMP = demo_models() / "1-cooling-water-pump" / "as-built.keepclear"
+DAMPED = demo_models() / "6-vacuum-pump-absorber" / "absorber-210kg-damped.keepclear"
 TRAIN = demo_models() / "3-air-compressor-train" / "as-built.keepclear"
 
 
@@ -36,6 +37,11 @@ def drawn(monkeypatch):
 def test_a_mode_is_told_by_number_frequency_range_and_name(drawn):
     texts = drawn(PUMP, "--of", "mode", "--mode", "2")
     assert texts[-1] == "Mode 2 · 140.99 Hz (131.7 to 150.2 Hz over tolerance) · pump against motor"
+
+
+@pytest.mark.parametrize(("of", "told"), [("scale", "Frequency scale"), ("plane", "Complex plane")])
+def test_scale_and_plane_name_the_model(drawn, of, told):
+    assert drawn(DAMPED, "--of", of)[-1] == f"{told} · Vacuum pump on floor beam, damped absorber of 210 kg"
 
 
 def test_a_long_caption_is_cut_to_a_small_picture(drawn):

@@ -4,6 +4,7 @@ import json
 import math
 from functools import cache
 
+import numpy as np
 import pytest
 
 from modalview.assembly.loads import unit_force
@@ -12,6 +13,7 @@ from modalview.resonance.drive import mode_drives
 from modalview.resonance.results import Drive, Verdict
 from modalview.store import parse_model
 from modalview.study import Request, Solution, solve
+from modalview.study.damped import damped
 
 PUMP = "1-cooling-water-pump/as-built"
 PRINTED = 0.05 + 1e-9  # printed to one decimal
@@ -123,6 +125,50 @@ def test_absorber_of_105_kg_misses_the_band_by_a_hundredth_of_a_hertz():
     assert check.band.nominal[0] / (2 * math.pi) == pytest.approx(17.700, abs=1e-9)
     assert check.verdict is Verdict.NOMINAL_ONLY
     assert (check.inside, check.possible) == (0, 2)
+
+
+DAMPED, UNDAMPED = (f"6-vacuum-pump-absorber/absorber-210kg{end}" for end in ("-damped", ""))
+BEAM_KG, BEAM_NM, ABSORBER_KG, ARM_NM, DASHPOT = 2100.0, 3.28e7, 210.0, 3.21e6, 8800.0
+
+
+def test_a_dashpot_on_the_absorber_damps_both_modes_and_leaves_the_verdict():
+    """The roots of |s**2 M + s C + K| for two masses, by hand as a polynomial of fourth degree."""
+    found = damped(Request(parse_model(json.dumps(tree(DAMPED)))), solved(DAMPED))
+    arm = np.polynomial.Polynomial([ARM_NM, DASHPOT])
+    beam = arm + np.polynomial.Polynomial([BEAM_NM, 0, BEAM_KG])
+    absorber = arm + np.polynomial.Polynomial([0, 0, ABSORBER_KG])
+    roots = sorted((root for root in (beam * absorber - arm**2).roots() if root.imag > 0), key=abs)
+    assert [mode.root for mode in found.modes] == pytest.approx(roots, rel=1e-9)
+    assert [mode.damped_hz for mode in found.modes] == pytest.approx([17.29, 22.44], abs=0.005)
+    assert [mode.damping_ratio for mode in found.modes] == pytest.approx([0.060, 0.116], abs=5e-4)
+    assert solved(DAMPED).outlook.verdict is solved(UNDAMPED).outlook.verdict is Verdict.CLEAR
+
+
+def test_the_dashpot_is_near_the_optimum_of_den_hartog():
+    """c = 2 m w sqrt(3 r / (8 (1 + r)**3)): J. P. Den Hartog, Mechanical Vibrations, 1934 (from memory)."""
+    share, alone = ABSORBER_KG / BEAM_KG, math.sqrt(BEAM_NM / BEAM_KG)
+    optimum = 2 * ABSORBER_KG * alone * math.sqrt(3 * share / (8 * (1 + share) ** 3))
+    assert optimum == pytest.approx(DASHPOT, rel=0.002)
+    softer = tree(DAMPED)
+    softer["links"][1]["stiffness"]["value"] = f"{ABSORBER_KG * (alone / (1 + share)) ** 2:.3g} N/m"
+    assert softer["links"][1]["stiffness"]["value"] == "2.71e+06 N/m"
+    assert solve_tree(softer).outlook.verdict is Verdict.NOMINAL_ONLY
+
+
+def test_the_dashpot_calms_the_run_up_and_costs_at_the_running_speed():
+    """Steady vibration of the beam under 400 N, mm/s rms; loss factors make a stiffness complex."""
+    speeds = np.arange(600.0, 1180.5, 0.5)
+    with_dashpot, without = _beam(speeds, DASHPOT, 0.0), _beam(speeds, 0.0, 0.01)
+    assert (with_dashpot.max(), without.max()) == pytest.approx((5.7, 28.8), abs=0.05)
+    assert speeds[without.argmax()] == pytest.approx(1015, abs=1)
+    assert (with_dashpot[-1], without[-1]) == pytest.approx((3.3, 0.11), abs=0.05)
+
+
+def _beam(rpm, dashpot: float, arm_loss: float):
+    w = rpm * 2 * math.pi / 60
+    arm, beam = ARM_NM * (1 + 1j * arm_loss) + 1j * w * dashpot, BEAM_NM * (1 + 0.024j)
+    reached = 400.0 / (beam + arm - w**2 * BEAM_KG - arm**2 / (arm - w**2 * ABSORBER_KG))
+    return 1e3 * w * np.abs(reached) / math.sqrt(2)
 
 
 def test_static_stiffness_hides_the_mode_that_dynamic_stiffness_shows():

@@ -126,6 +126,12 @@ ROWS = (
         {"vacuum pump/1x": CLEAR},
         ((16.91, 16.3, 17.5), (23.14, 22.3, 24.0)),
     ),
+    Row(
+        f"{VACUUM}/absorber-210kg-damped",
+        CLEAR,
+        {"vacuum pump/1x": CLEAR},
+        ((16.91, 16.3, 17.5), (23.14, 22.3, 24.0)),
+    ),
 )
 
 per_row = pytest.mark.parametrize("row", ROWS, ids=lambda row: row.file)

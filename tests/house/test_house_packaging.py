@@ -38,7 +38,7 @@ def test_command_starts_the_program():
 
 def test_resources_and_examples_are_found():
     assert {"model.schema.json", "style.qss", "cautions.md"} <= _names(places.resources())
-    assert len(list(places.demo_models().glob("*/*.keepclear"))) == 18
+    assert len(list(places.demo_models().glob("*/*.keepclear"))) == 19
 
 
 @pytest.mark.slow
