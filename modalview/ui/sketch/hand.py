@@ -45,6 +45,7 @@ class Hand(QObject):
         super().__init__(sheet)
         self.document = document
         self._sheet = sheet
+        self.editing: Any = None  # ui.sketch.editing.Editing, which knows the clipboard
         self.chosen: tuple[str, ...] = ()
         self.kind: ToolKind = BY_NAME["choose"]
         self._tool: Tool | None = None
@@ -363,7 +364,11 @@ class Hand(QObject):
 
     def key(self, event: QKeyEvent) -> bool:
         """Do what a key asks for; tell whether it was one of the hand's."""
-        if self.document.model is None or event.modifiers() & _NOT_OURS:
+        if self.document.model is None:
+            return False
+        if self.editing is not None and self.editing.key(event):
+            return True
+        if event.modifiers() & _NOT_OURS:
             return False
         leap = bool(event.modifiers() & Qt.KeyboardModifier.ShiftModifier)
         return self._named_key(Qt.Key(event.key()), LEAP if leap else 1) or self._letter(

@@ -4,6 +4,7 @@ from typing import Any
 
 from PySide6.QtCore import QObject
 
+from modalview.ui.sketch.editing import Editing
 from modalview.ui.sketch.hand import Hand
 from modalview.ui.sketch.numbers import NumberEntry
 from modalview.ui.sketch.partform import PartForm
@@ -22,6 +23,8 @@ class Sketching(QObject):
         self.palette = window.palette_of_tools
         self.numbers = NumberEntry(self.hand, window.sheet)
         self.form = PartForm(window.document, window.sheet)
+        self.editing = Editing(self.hand, window.sheet)
+        self.hand.editing = self.editing
         self._awaited: tuple[tuple[str, ...], bool] | None = None  # parts whose form waits for the sheet
         self._connect()
 
@@ -36,6 +39,7 @@ class Sketching(QObject):
         hand.drawn.connect(lambda part: self._ask_values((part,), fresh=True))
         hand.form_asked.connect(lambda parts: self._ask_values(parts, fresh=False))
         window.parts.part_chosen.connect(self._on_part_of_table)
+        window.results.doubts.parts_chosen.connect(self._on_parts_of_doubt)
         window.sheet.laid_out.connect(self._on_laid_out)
         window.document.model_changed.connect(self._on_model_changed)
         window.document.opened.connect(self._on_opened)
@@ -63,6 +67,12 @@ class Sketching(QObject):
         if self.hand.part(part) is not None:
             self.hand.choose((part,))
 
+    def _on_parts_of_doubt(self, parts: tuple[str, ...]) -> None:
+        """Choose what is doubted; the values follow."""
+        known = tuple(part for part in parts if self.hand.part(part) is not None)
+        if known:
+            self.hand.choose(known)
+
     def _on_model_changed(self) -> None:
         self.palette.show_motion(self._window.document.model.motion)
         self.hand.forget_gone()
@@ -75,6 +85,11 @@ class Sketching(QObject):
         self.palette.show_motion(self._window.document.model.motion)
 
     # Values beside a part
+
+    def ask_chosen(self) -> None:
+        """Ask for the values of what is chosen."""
+        if self.hand.chosen:
+            self._ask_values(self.hand.chosen, fresh=False)
 
     def _ask_values(self, parts: tuple[str, ...], *, fresh: bool) -> None:
         self._awaited = parts, fresh
