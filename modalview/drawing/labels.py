@@ -77,13 +77,15 @@ class Board:
         self._taken = np.zeros((64, 4))
         self._count = 0
 
-    def take(self, rectangles: Floats) -> None:
-        """Mark rectangles (n, 4) of x1, y1, x2, y2 as taken."""
+    def take(self, rectangles: Floats) -> slice:
+        """Mark rectangles (n, 4) of x1, y1, x2, y2 as taken; return which of all they are."""
+        first = self._count
         need = self._count + len(rectangles)
         while need > len(self._taken):
             self._taken = np.vstack([self._taken, np.zeros_like(self._taken)])
-        self._taken[self._count : need] = rectangles
+        self._taken[first:need] = rectangles
         self._count = need
+        return slice(first, need)
 
     def size(self, lines: tuple[Line, ...]) -> tuple[float, float]:
         """Return width and height of a label in pixels."""
@@ -98,6 +100,7 @@ class Board:
         within: Rectangle | None = None,
         sway: tuple[float, float] = (0.0, 0.0),
         owner: Owner | None = None,
+        over: slice | None = None,
     ) -> list[Text]:
         """Put a label at the first free spot and take its room; nothing when none is free.
 
@@ -112,6 +115,8 @@ class Board:
             Pixels that the label moves with its body across and up, to both sides; that room is kept too.
         owner : Owner or None
             What the label belongs to: spots nearer to something else are passed over.
+        over : slice or None
+            Of what is taken, what the label may cover.
         """
         if not spots:
             return []
@@ -122,7 +127,7 @@ class Board:
         free = np.flatnonzero(self._inside(boxes, within))
         if not len(free):
             return []
-        near = self._near(boxes[free])
+        near = self._near(boxes[free], over)
         for some in np.array_split(free, range(_BATCH, len(free), _BATCH)):
             clear = some[~_meet(boxes[some], near)]
             if owner is not None and len(clear):
@@ -139,9 +144,11 @@ class Board:
         left, top, right, bottom = boxes.T
         return np.asarray((left >= x) & (top >= y) & (right <= x + width) & (bottom <= y + height))
 
-    def _near(self, boxes: Floats) -> Floats:
+    def _near(self, boxes: Floats, over: slice | None) -> Floats:
         """Return the taken rectangles that any of the boxes could meet."""
         taken = self._taken[: self._count]
+        if over is not None:
+            taken = np.delete(taken, over, axis=0)
         low, high = boxes[:, :2].min(axis=0), boxes[:, 2:].max(axis=0)
         return taken[_meet(np.array([[*low, *high]]), taken, each=True)]
 

@@ -6,7 +6,7 @@ import numpy as np
 
 from modalview.drawing.axis import Axis, merged, spread
 from modalview.drawing.captions import in_two, shortened
-from modalview.drawing.labels import Board, Line, Spot
+from modalview.drawing.labels import Board, Line, Spot, extent
 from modalview.drawing.primitives import Anchor, Box, Circles, Drawing, Item, Lines, Role, Size, Text
 from modalview.drawing.scalecontent import ScaleBand, ScaleContent, ScaleCount, ScaleMode
 from modalview.drawing.symbols import arrow, hatched
@@ -27,8 +27,9 @@ _DISCS = (0.49, 0.57)
 _BOUND, _COUNT = 0.61, 0.70
 _MODE = (0.79, 0.91)
 HAIR = np.array([0.0, -1.0, 0.0, 1.0])  # what a level line takes, pixels
+FAR_LABEL = 120.0  # pixels at most from what a label names
 MANY = 60  # discs or modes: more are drawn together
-LEAST_COLUMNS = 104.0  # pixels right of the labels; with less, the discs are folded away
+LEAST_COLUMNS = 84.0  # pixels right of the labels; with less, the discs are folded away
 
 _RANGE_ROLE = {Verdict.IN_BAND: Role.BAD, Verdict.NOMINAL_ONLY: Role.WARN}
 
@@ -50,11 +51,12 @@ class _Frame:
     right: float
     text_scale: float
     board: Board
+    widest: str  # of the labels of the bounds
 
     @property
     def labels(self) -> float:
         """Right-hand end of the label column: large texts widen it at the cost of the others."""
-        need = 12.0 + text_width("highest mode", Size.SMALL, text_scale=self.text_scale)
+        need = 12.0 + text_width(self.widest, Size.SMALL, text_scale=self.text_scale)
         wide = self.right - self.left
         return self.left + min(max(need, _LABELS * wide), 0.62 * wide)
 
@@ -86,11 +88,11 @@ def scale_drawing(
         width - 14.0 - text_width("240 000", Size.SMALL, text_scale=text_scale),
         text_scale,
         Board(width, height, text_scale),
+        max(("highest mode", *(_pair(one) for one in (content.lowest, content.highest) if one)), key=len),
     )
     discs = discs and frame.right - frame.labels >= LEAST_COLUMNS and len(content.discs) > 0
-    items = _axes(frame) + _bands(frame, content.bands)
-    if discs:
-        items += _discs(frame, content)
+    pale = _discs(frame, content) if discs else ()
+    items = _axes(frame) + _bands(frame, content.bands) + pale
     items += _bounds(frame, content) + _counts(frame, content.counts) + _modes(frame, content.modes)
     items += _titles(frame, content, discs=discs)
     return Scale(Drawing(items, (0.0, 0.0, width, height), text_scale), axis)
@@ -147,6 +149,7 @@ def _bands(frame: _Frame, bands: tuple[ScaleBand, ...]) -> tuple[Item, ...]:
     axis = frame.axis
     shown = [band for band in bands if band.high > axis.low_hz and band.low < axis.high_hz]
     items: list[Item] = []
+    own: dict[int, slice] = {}
     for band in shown:
         top, bottom = axis.y_of(band.high), axis.y_of(band.low)
         box = (frame.left, top, frame.right - frame.left, bottom - top)
@@ -161,28 +164,65 @@ def _bands(frame: _Frame, bands: tuple[ScaleBand, ...]) -> tuple[Item, ...]:
         ]
         items.append(Lines(np.array(lines).reshape(-1, 4), Role.WARN, 1.8))
         taken = np.array([[frame.left, y - 1.0, frame.right, y + 1.0] for y in (top, bottom)])
-        frame.board.take(np.vstack([taken, np.array(lines).reshape(-1, 4) + HAIR]))
-    for band in sorted(shown, key=lambda band: -band.to):
-        items += _band_label(frame, band)
+        own[id(band)] = frame.board.take(np.vstack([taken, np.array(lines).reshape(-1, 4) + HAIR]))
+    written = {id(band): _band_label(frame, band, own[id(band)]) for band in _from_above(shown)}
+    for band in _from_above(shown):  # what stands elsewhere takes no room from what stands at its line
+        items += written[id(band)] or _band_label_near(frame, band)
     return tuple(items) + _off_scale(frame, [band for band in bands if band not in shown])
 
 
-def _band_label(frame: _Frame, band: ScaleBand) -> list[Text]:
+def _band_label(frame: _Frame, band: ScaleBand, lines: slice) -> list[Item]:
+    """Write a band's name beside its line; else on it, on paper; shortened, or in two lines; else nothing."""
+    text_scale = frame.text_scale
     room = (frame.labels - frame.left - 8) / BOLD
-    line = tuple(
-        Line(shortened(part, room, Size.SMALL, frame.text_scale), Role.WARN, Size.SMALL, bold=True)
-        for part in in_two(band.label, room, frame.text_scale)
-    )
-    own, gap = frame.axis.y_of(band.to), 2.5 + frame.board.size(line)[1] / 2
-    beside = [Spot(frame.left + 6, own - gap, 1, 0), Spot(frame.left + 6, own + gap, 1, 0)]
-    return frame.board.place(line, beside) or _labelled(frame, line, own - gap)
+    most = (frame.x(_COUNT) - 14.0 * text_scale - frame.left - 8) / BOLD
+    whole, short = (_bold(shortened(band.label, wide, Size.SMALL, text_scale)) for wide in (most, room))
+    y = frame.axis.y_of(band.to)
+    two = _two_lines(frame, band)
+    for label in ((whole,), two, (short,)):
+        if label == two and any(line.text.endswith("…") for line in two):
+            continue
+        placed = frame.board.place(label, _beside_line(frame, y, label))
+        if placed:
+            return [*placed]
+        placed = frame.board.place(label, [Spot(frame.left + 8, y, 1, 0)], over=lines)
+        if placed:
+            x1, y1, x2, y2 = extent(placed, text_scale)
+            return [Box(x1 - 3, y1, x2 - x1 + 6, y2 - y1, 0.0, None, Role.PAPER, 0.0), *placed]
+    return []
+
+
+def _band_label_near(frame: _Frame, band: ScaleBand) -> list[Item]:
+    """Write a band's name as near to its line as there is room."""
+    two = _two_lines(frame, band)
+    return [*_labelled(frame, two, frame.axis.y_of(band.to) - frame.board.size(two)[1] / 2)]
+
+
+def _two_lines(frame: _Frame, band: ScaleBand) -> tuple[Line, ...]:
+    room = (frame.labels - frame.left - 8) / BOLD
+    parts = in_two(band.label, room, frame.text_scale)
+    return tuple(_bold(shortened(part, room, Size.SMALL, frame.text_scale)) for part in parts)
+
+
+def _from_above(bands: list[ScaleBand]) -> list[ScaleBand]:
+    return sorted(bands, key=lambda band: -band.to)
+
+
+def _bold(text: str) -> Line:
+    return Line(text, Role.WARN, Size.SMALL, bold=True)
+
+
+def _beside_line(frame: _Frame, y: float, lines: tuple[Line, ...]) -> list[Spot]:
+    gap = 2.5 + frame.board.size(lines)[1] / 2
+    return [Spot(frame.left + 6, y - gap, 1, 0), Spot(frame.left + 6, y + gap, 1, 0)]
 
 
 def _labelled(frame: _Frame, lines: tuple[Line, ...], y: float) -> list[Text]:
     """Write into the label column, as near to a height as there is room."""
     high = frame.board.size(lines)[1] / 2
     low, top = frame.axis.bottom - high, frame.axis.top + high
-    steps = sorted((step for step in range(-240, 241, 3)), key=abs)
+    reach = round(FAR_LABEL * frame.text_scale)
+    steps = sorted(range(-reach, reach + 1, 3), key=abs)
     spots = [Spot(frame.left + 6, min(max(y + step, top), low), 1, 0) for step in steps]
     return frame.board.place(lines, spots)
 
@@ -214,6 +254,7 @@ def _discs(frame: _Frame, content: ScaleContent) -> tuple[Item, ...]:
     if len(content.discs) > MANY:  # one bar for discs that overlap: thinner ones could not be told apart
         ends = frame.axis.ys_of(merged(content.discs[:, 0], content.discs[:, 2]))
         across = np.full(len(ends), (first + last) / 2)
+        frame.board.take(np.stack([across - 5, ends.min(axis=1), across + 5, ends.max(axis=1)], axis=1))
         return (Lines(np.stack([across, ends[:, 0], across, ends[:, 1]], axis=1), Role.MUTED, 8.0, 0.4),)
     ordered = content.discs[np.argsort(content.discs[:, 1])]
     pitch = min(8.0, (last - first) / max(len(ordered) - 1, 1))
@@ -222,6 +263,7 @@ def _discs(frame: _Frame, content: ScaleContent) -> tuple[Item, ...]:
     bars = np.stack([x, bottom, x, top], axis=1)
     dots = np.stack([x, middle], axis=1)
     width = min(3.0, 0.7 * pitch) if len(ordered) > 1 else 3.0
+    frame.board.take(np.stack([x - 3, top, x + 3, bottom], axis=1))
     return (
         Lines(bars, Role.MUTED, width, 0.55),
         Circles(dots, min(2.4, width), None, Role.MUTED, 0.0),
@@ -243,12 +285,16 @@ def _bounds(frame: _Frame, content: ScaleContent) -> tuple[Item, ...]:
         if low - high < 3.0:
             low, high = middle + 1.5, middle - 1.5
         items.append(Lines(np.array([[x, low, x, high]]), Role.INK, 4.0))
-        text = f"{significant(pair[0], 3)} to {significant(pair[1], 3)}"
-        lines = (Line(name, Role.INK, Size.SMALL), Line(text, Role.INK, Size.SMALL))
+        lines = (Line(name, Role.INK, Size.SMALL), Line(_pair(pair), Role.INK, Size.SMALL))
         items += _labelled(
             frame, lines, low + 20 * frame.text_scale if below else high - 20 * frame.text_scale
         )
     return tuple(items)
+
+
+def _pair(pair: tuple[float, float]) -> str:
+    """Write both ends with the digits of the modes beside them, none of which may seem to lie beyond."""
+    return f"{significant(pair[0], 4)} to {significant(pair[1], 4)}"
 
 
 def _counts(frame: _Frame, counts: tuple[ScaleCount, ...]) -> tuple[Item, ...]:
@@ -342,7 +388,7 @@ def _titles(frame: _Frame, content: ScaleContent, *, discs: bool) -> tuple[Item,
     places = spread([x for x, _ in columns], apart, frame.left, frame.right + apart / 2)
     titles = [(x, Anchor.MIDDLE, lines) for x, (_, lines) in zip(places, columns, strict=True)]
     if discs:
-        titles.append((places[0] - apart / 2 - 4.0, Anchor.RIGHT, ("Gershgorin", "bounds")))
+        titles.append((places[0] - apart / 2 - 8.0 * text_scale, Anchor.RIGHT, ("Gershgorin", "bounds")))
     items: list[Item] = [
         Text(x, frame.axis.bottom + (13.0 + 14.5 * row) * text_scale, line, Role.MUTED, size, anchor)
         for x, anchor, lines in titles

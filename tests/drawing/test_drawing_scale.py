@@ -118,8 +118,40 @@ def test_a_count_in_a_band_is_told_by_colour_weight_and_number():
 
 def test_bounds_and_modes_are_written():
     words = {text.text for text in texts(scale_drawing(PUMP, 320, 760).drawing.items)}
-    assert {"lowest mode", "47.3 to 51.3", "highest mode", "212 to 250", "7× vane pass"} <= words
+    assert {"lowest mode", "47.30 to 51.30", "highest mode", "212.3 to 249.5", "7× vane pass"} <= words
     assert "and 1 rigid-body mode at 0 Hz" in words
+
+
+@pytest.mark.parametrize("size", [(320, 700), (300, 420), (520, 480)])
+@pytest.mark.parametrize("text_scale", [1.0, 2.0])
+def test_the_name_of_a_band_stands_in_it_or_on_its_line(size: tuple[int, int], text_scale: float):
+    scale = scale_drawing(PUMP, *size, text_scale=text_scale)
+    for one in PUMP.bands:
+        label = next(
+            t for t in texts(scale.drawing.items) if t.text.split()[0].rstrip("…") == one.label.split()[0]
+        )
+        _, top, _, bottom = extent([label], text_scale)
+        assert top < scale.axis.y_of(one.low)
+        assert bottom > scale.axis.y_of(one.high)
+
+
+def test_bounds_are_written_with_the_digits_of_the_modes_they_enclose():
+    content = ScaleContent(lowest=(47.3, 51.26), highest=(212.2, 249.45), modes=PUMP.modes)
+    words = {text.text for text in texts(scale_drawing(content, 320, 760).drawing.items)}
+    assert {"47.30 to 51.26", "212.2 to 249.4"} & words
+    assert "212 to 249" not in words
+
+
+def test_a_label_of_a_bound_stands_near_its_bar_or_falls_away():
+    content = ScaleContent(
+        bands=tuple(band(f"{n}×", 10.0 * 1.3**n, 0.12) for n in range(12)),
+        lowest=(11, 12),
+        highest=(190, 200),
+    )
+    scale = scale_drawing(content, 320, 500, text_scale=1.5)
+    for text in texts(scale.drawing.items):
+        if text.text == "lowest mode":
+            assert abs(text.y - scale.axis.y_of(11)) < 240
 
 
 def test_orders_far_from_the_modes_are_marked_at_the_edge():
