@@ -94,21 +94,21 @@ def grip_items(x: float, y: float) -> tuple[Item, ...]:
 
 
 def note_items(
-    x: float, y: float, lines: tuple[str, ...], text_scale: float, width: float
+    x: float, y: float, lines: tuple[str, ...], text_scale: float, sheet: tuple[float, float]
 ) -> tuple[Item, ...]:
     """Return a small note beside the pointer, on whichever side there is room.
 
     Parameters
     ----------
-    width : float
-        Of the sheet, pixels.
+    sheet : width and height, pixels
     """
     if not lines:
         return ()
+    width, height = sheet
     wide = max(text_width(line, Size.SMALL, text_scale=text_scale) for line in lines) + 12.0
     step = line_height(Size.SMALL, text_scale=text_scale)
     left = x + 16.0 if x + 20.0 + wide < width else x - 16.0 - wide
-    top = y + 16.0
+    top = y + 16.0 if y + 26.0 + step * len(lines) < height else y - 22.0 - step * len(lines)
     items: list[Item] = [
         Box(left, top, wide, step * len(lines) + 6.0, 3.0, Role.GHOST, Role.PAPER, 1.0, 0.92)
     ]
@@ -116,3 +116,28 @@ def note_items(
         at = top + 3.0 + step * (number + 0.5)
         items.append(Text(left + 6.0, at, line, Role.INK, Size.SMALL, Anchor.LEFT))
     return tuple(items)
+
+
+def hint_line(text: str, width: float, height: float, text_scale: float) -> tuple[Item, ...]:
+    """Return a line at the foot of the sheet that says what to do, or why something was not done."""
+    rows = _wrapped(text, width - 40.0, text_scale)
+    step = line_height(Size.SMALL, text_scale=text_scale)
+    wide = max(text_width(row, Size.SMALL, text_scale=text_scale) for row in rows) + 16.0
+    top = height - step * len(rows) - 10.0
+    box = Box(8.0, top, wide, step * len(rows) + 6.0, 3.0, Role.GHOST, Role.PAPER, 1.0, 0.94)
+    lines = tuple(
+        Text(16.0, top + 3.0 + step * (number + 0.5), row, Role.INK, Size.SMALL)
+        for number, row in enumerate(rows)
+    )
+    return box, *lines
+
+
+def _wrapped(text: str, room: float, text_scale: float) -> list[str]:
+    rows: list[str] = [""]
+    for word in text.split():
+        longer = f"{rows[-1]} {word}".strip()
+        if rows[-1] and text_width(longer, Size.SMALL, text_scale=text_scale) > room:
+            rows.append(word)
+        else:
+            rows[-1] = longer
+    return rows

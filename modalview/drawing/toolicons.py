@@ -5,15 +5,15 @@ import numpy as np
 from modalview.drawing.primitives import Box, Circles, Drawing, Item, Lines, Polygons, Role
 from modalview.drawing.symbols import TEMPLATES, Symbol, arrow, between, ground
 
-SIZE = 28.0
-_MIDDLE = SIZE / 2
+SIZE = 24.0
+_MIDDLE = 14.0
 _SLANT = np.array([[[5.0, 23.0], [23.0, 5.0]]])
 _UPRIGHT = np.array([[[_MIDDLE, 3.0], [_MIDDLE, 25.0]]])
 
 
 def tool_icon(name: str) -> Drawing:
     """Return the picture of a tool, SIZE pixels square."""
-    return Drawing(_items(name), (0.0, 0.0, SIZE, SIZE))
+    return Drawing(_items(name), (2.0, 2.0, SIZE, SIZE))
 
 
 def _items(name: str) -> tuple[Item, ...]:

@@ -46,6 +46,7 @@ class Hand(QObject):
         self.document = document
         self._sheet = sheet
         self.editing: Any = None  # ui.sketch.editing.Editing, which knows the clipboard
+        self.hint = ""  # at the foot of the sheet
         self.chosen: tuple[str, ...] = ()
         self.kind: ToolKind = BY_NAME["choose"]
         self._tool: Tool | None = None
@@ -224,8 +225,10 @@ class Hand(QObject):
         self._sheet.hold_view()
 
     def say(self, text: str) -> None:
-        """Tell a hint."""
+        """Tell a hint, at the foot of the sheet."""
+        self.hint = text
         self.told.emit(text)
+        self._sheet.update()
 
     def said(self, text: str) -> None:
         """Tell why something was not done, if it was not."""
@@ -267,8 +270,7 @@ class Hand(QObject):
             self.cursor = None
         self._sheet.setCursor(Qt.CursorShape.ArrowCursor if name == "choose" else Qt.CursorShape.CrossCursor)
         self.tool_changed.emit(name)
-        self.say(kind.hint)
-        self._sheet.update()
+        self.say("" if name == "choose" else f"{kind.label.capitalize()}: {kind.hint}. Esc puts it away.")
 
     @property
     def tool(self) -> Tool:
@@ -323,6 +325,8 @@ class Hand(QObject):
         """Return the left button goes down."""
         if self.ready:
             self.begun.emit()
+            if self.kind.name == "choose":
+                self.hint = ""
             self._pointer, self._down, self.cursor = self._pointed(event), True, None
             self._after(lambda: self.tool.press(self._pointer))
 
@@ -526,6 +530,9 @@ class Hand(QObject):
             items += self._notes()
         if self.cursor is not None:
             items += overlay.cursor_items(*self.cursor)
+        if self.hint:
+            geometry = self.geometry
+            items += overlay.hint_line(self.hint, geometry.width, geometry.height, geometry.text_scale)
         return items
 
     def _notes(self) -> tuple[Any, ...]:
@@ -537,7 +544,7 @@ class Hand(QObject):
         lines += self._tool.notes() if self._tool is not None else ()
         geometry = self.geometry
         return overlay.note_items(
-            self._pointer.x, self._pointer.y, lines, geometry.text_scale, geometry.width
+            self._pointer.x, self._pointer.y, lines, geometry.text_scale, (geometry.width, geometry.height)
         )
 
     def rectangle(self, parts: tuple[str, ...]) -> QRect:

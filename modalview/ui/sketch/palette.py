@@ -38,7 +38,9 @@ class ToolButton(QToolButton):
         picture.setDevicePixelRatio(ratio)
         picture.fill(Qt.GlobalColor.transparent)
         painter = QPainter(picture)
-        paint_drawing(painter, tool_icon(self.kind.name), theme)
+        drawing = tool_icon(self.kind.name)
+        painter.translate(-drawing.bounds[0], -drawing.bounds[1])
+        paint_drawing(painter, drawing, theme)
         painter.end()
         self.setIcon(QIcon(picture))
         self.setIconSize(QSize(round(SIZE), round(SIZE)))
@@ -63,8 +65,8 @@ class Palette(QWidget):
         self._group = QButtonGroup(self)
         self.buttons = {kind.name: ToolButton(kind, self) for kind in TOOLS}
         self._grid = QGridLayout(self)
-        self._grid.setContentsMargins(4, 6, 2, 4)
-        self._grid.setSpacing(1)
+        self._grid.setContentsMargins(3, 4, 2, 2)
+        self._grid.setSpacing(0)
         for name, button in self.buttons.items():
             self._group.addButton(button)
             button.clicked.connect(lambda _checked=False, name=name: self.tool_taken.emit(name, False))
@@ -108,8 +110,8 @@ class Palette(QWidget):
         self._arrange()
 
     def _arrange(self) -> None:
-        high = max(button.sizeHint().height() for button in self.buttons.values()) + 1
-        rows = max((self.height() - 10) // high, 4)
+        high = max(button.sizeHint().height() for button in self.buttons.values())
+        rows = max((self.height() - 6) // high, 4)
         if self._arranged == (rows, self._shown):
             return
         self._arranged = rows, self._shown

@@ -265,9 +265,9 @@ class PartForm(FloatingForm):
             )
         except InputError as error:
             return self._why_not(error)
-        self._waiting = {
-            other: text for other, text in self._waiting.items() if other not in self._group(lines)
-        }
+        for other in self._group(lines):
+            if self._waiting.pop(other, None) is not None:
+                self.row(other).tell("", refused=False)
         if edit:
             self._document.push(edit)
             self.committed.emit()

@@ -9,8 +9,6 @@ from modalview.ui.sketch.hand import Hand
 from modalview.ui.sketch.numbers import NumberEntry
 from modalview.ui.sketch.partform import PartForm
 
-_TOLD_MS = 12_000
-
 
 class Sketching(QObject):
     """Everything that draws and edits on the sheet of one window."""
@@ -32,7 +30,7 @@ class Sketching(QObject):
         window, hand = self._window, self.hand
         self.palette.tool_taken.connect(self._on_tool_taken)
         hand.tool_changed.connect(self._on_tool_changed)
-        hand.told.connect(lambda words: window.statusBar().showMessage(words, _TOLD_MS))
+        hand.told.connect(window.sheet.setAccessibleDescription)
         hand.number_begun.connect(self.numbers.begin)
         hand.chosen_changed.connect(self._on_chosen_changed)
         hand.begun.connect(self.form.hide_form)
