@@ -23,11 +23,8 @@ from modalview.model.parts import (
     SpeedRange,
     Spring,
 )
-from modalview.model.tolerance_text import typed_entry
+from modalview.model.typed_machines import typed_direction, typed_margin, typed_speed
 from modalview.model.values import Entry
-from modalview.units.numbers import split_number
-from modalview.units.parse import unit_of
-from modalview.units.quantities import RATIO, SPEED
 from modalview.units.show import short
 
 _VECTOR_PART = re.compile(r"[+-]?(?:[0-9]+\.?[0-9]*|\.[0-9]+)(?:[eE][+-]?[0-9]+)?")
@@ -80,27 +77,8 @@ def _speed_text(speed: Entry | SpeedRange) -> str:
     return f"{speed.from_.text} to {speed.to.text}" if isinstance(speed, SpeedRange) else speed.text
 
 
-def _speed(text: str) -> Entry | SpeedRange:
-    low, between, high = text.partition(" to ")
-    if not between:
-        return typed_entry(text, SPEED)
-    bare = split_number(low.strip())
-    if bare and not bare[1].strip():  # "600 to 1800 rpm": the unit stands once, at the end
-        low = f"{low.strip()} {unit_of(high)}"
-    return SpeedRange(from_=typed_entry(low, SPEED), to=typed_entry(high, SPEED))
-
-
 def _margin_text(margin: Entry | Margin) -> str:
     return f"-{margin.below.text} / +{margin.above.text}" if isinstance(margin, Margin) else margin.text
-
-
-def _margin(text: str) -> Entry | Margin:
-    below, between, above = text.partition("/")
-    if not between:
-        return typed_entry(text.removeprefix("±").removeprefix("+-"), RATIO)
-    if not below.startswith("-") or not above.strip().startswith("+"):
-        raise UnitError(f'"{text}" cannot be read as a margin: write "15 %" or "-10 % / +20 %"')
-    return Margin(below=typed_entry(below[1:], RATIO), above=typed_entry(above.strip()[1:], RATIO))
 
 
 def _vector_text(vector: tuple[float, ...]) -> str:
@@ -127,7 +105,7 @@ def _direction_text(direction: str | tuple[float, ...]) -> str:
 
 def _direction(text: str) -> str | tuple[float, ...]:
     """Read a word as it is, several numbers as components; the rules tell which words there are."""
-    return _numbers(text) or text
+    return _numbers(text) or typed_direction(text) or text
 
 
 def _teeth(text: str) -> tuple[int, int]:
@@ -144,9 +122,9 @@ def _words(text: str) -> tuple[str, ...]:
 _DIRECTION = _Form(_direction_text, _direction)
 _VECTOR = _Form(_vector_text, _vector)
 _WORDS = _Form(", ".join, _words)
-_MARGIN = _Form(_margin_text, _margin)
+_MARGIN = _Form(_margin_text, typed_margin)
 _FORMS: dict[tuple[type, str], _Form] = {
-    (Machine, "speed"): _Form(_speed_text, _speed),
+    (Machine, "speed"): _Form(_speed_text, typed_speed),
     (Machine, "margin"): _MARGIN,
     (Excitation, "margin"): _MARGIN,
     (Excitation, "direction"): _DIRECTION,
