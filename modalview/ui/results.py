@@ -9,6 +9,7 @@ from modalview.model.parts import Machine, Model
 from modalview.ui.analysis import Analysis
 from modalview.ui.checkcard import CheckCard
 from modalview.ui.document import Document
+from modalview.ui.doubts import Doubts
 from modalview.ui.entry import EntryField
 from modalview.ui.theme import LIGHT, Theme
 from modalview.ui.values import ValueRow, machine_rows
@@ -78,6 +79,8 @@ class Results(QScrollArea):
         self._heading = _heading("Orders checked", self._inside)
         self._column.addWidget(self._heading)
         self._checks = self._part()
+        self.doubts = Doubts(self._inside)
+        self._column.addWidget(self.doubts)
         self.not_checked = self._words("Not checked")
         self.notes = self._words("Notes on the model")
         self.story = self._words("About this model")
@@ -144,6 +147,7 @@ class Results(QScrollArea):
         for number, card in enumerate(self._cards):
             card.setVisible(number < len(checks))
         outlook = self._analysis.outlook
+        self.doubts.show_known(self._document.model, self._analysis)
         _say(self.not_checked, outlook.not_checked if outlook else ())
         _say(self.notes, outlook.notes if outlook else ())
 
