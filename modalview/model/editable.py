@@ -64,7 +64,12 @@ def editable_fields(model: Model, address: Address) -> tuple[EditableField, ...]
     >>> [(one.name, one.text, one.tolerance) for one in editable_fields(model, ("bodies", "motor"))]
     [('name', '', ''), ('mass', '620 kg', '3 %'), ('tolerance', '', '')]
     """
-    return tuple(_fields(look(model, address), _Spot(address, (), model.motion)))
+    return editable_fields_of(look(model, address), address, model.motion)
+
+
+def editable_fields_of(part: Any, address: Address, motion: Motion) -> tuple[EditableField, ...]:
+    """Return the same of a part that is at hand, without looking for it in its model."""
+    return tuple(_fields(part, _Spot(address, (), motion)))
 
 
 @dataclass(frozen=True, slots=True)

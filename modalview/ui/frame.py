@@ -24,7 +24,7 @@ from modalview.ui.examples import bundled_examples, first_of_each
 from modalview.ui.menus import Menus, keyboard_text
 from modalview.ui.modes import DampedModes, Modes
 from modalview.ui.pages import Pages
-from modalview.ui.parttable import PartTable
+from modalview.ui.parttable import PartTable, PartTablePage
 from modalview.ui.planeview import PlaneView
 from modalview.ui.playbar import PlayBar, speed_of
 from modalview.ui.reasons import Reasons
@@ -92,7 +92,7 @@ class Frame(QMainWindow):
             ("modes", "Modes", self.modes),
             ("damped", "Damped", self.damped),
             ("plane", "Complex plane", self.plane),
-            ("values", "Values", self.parts),
+            ("values", "Values", PartTablePage(self.parts, self)),
         ):
             self.below.add(name, title, place)
         self.below.offer("damped", there=False)

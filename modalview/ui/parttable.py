@@ -2,194 +2,15 @@
 
 from typing import Any
 
-from PySide6.QtCore import QAbstractTableModel, QModelIndex, QObject, QPersistentModelIndex, Qt, Signal
-from PySide6.QtGui import QColor, QGuiApplication, QKeySequence
-from PySide6.QtWidgets import QAbstractItemView, QHeaderView, QTableView, QWidget
+from PySide6.QtCore import QEvent, QModelIndex, Qt, Signal
+from PySide6.QtGui import QGuiApplication, QKeySequence
+from PySide6.QtWidgets import QAbstractItemView, QHeaderView, QLabel, QTableView, QVBoxLayout, QWidget
 
-from modalview.errors import InputError
 from modalview.ui.cells import cells_of, text_of
 from modalview.ui.document import Document
-from modalview.ui.theme import LIGHT, Theme
-from modalview.ui.values import ValueRow, ValueRows
+from modalview.ui.partlines import CONVERTED, PART, TOLERANCE, TYPED, WHAT, PartTableModel
 
-_Index = QModelIndex | QPersistentModelIndex
-PART, WHAT, TYPED, CONVERTED, TOLERANCE = range(5)
-_HEADS = ("Part", "What", "Value as typed", "", "Tolerance")
-_CONVERTED_HEADS = {"SI": "In SI", "mm-t": "In mm and t", "inch-pound": "In inch and lb"}
-_TYPED = (TYPED, TOLERANCE)
-_Role = Qt.ItemDataRole
-
-
-class PartTableModel(QAbstractTableModel):
-    """The lines of the table; a refused entry stays visible with its reason and changes nothing."""
-
-    refused = Signal(str)
-
-    def __init__(self, document: Document, parent: QObject | None = None) -> None:
-        super().__init__(parent)
-        self._document = document
-        self.rows: list[ValueRow] = []
-        self._memory = ValueRows()
-        self._system = "SI"
-        self._refusals: dict[tuple[Any, int], tuple[str, str]] = {}
-        self._theme: Theme = LIGHT
-
-    def show_model(self, model: Any, *, anew: bool, system: str = "SI") -> None:
-        """Show the lines of a model, converted; ``anew`` drops the refused entries of another one."""
-        rows = self._memory.of(model, system)
-        if system != self._system:
-            self._system = system
-            self.headerDataChanged.emit(Qt.Orientation.Horizontal, CONVERTED, CONVERTED)
-        same = not anew and [row.address for row in rows] == [row.address for row in self.rows]
-        if same:
-            self.rows = rows
-            self.dataChanged.emit(self.index(0, 0), self.index(len(rows) - 1, TOLERANCE))
-            return
-        self.beginResetModel()
-        self.rows = rows
-        if anew:
-            self._refusals.clear()
-        self.endResetModel()
-
-    def set_theme(self, theme: Theme) -> None:
-        """Colour refusals and second text."""
-        self._theme = theme
-
-    def row_of_part(self, part_id: str) -> int:
-        """Return the first line of a part, -1 when it has none."""
-        return next((n for n, row in enumerate(self.rows) if row.part_id == part_id), -1)
-
-    def rowCount(self, parent: _Index = QModelIndex()) -> int:  # noqa: N802, B008  (Qt's)
-        """Return the number of lines."""
-        return 0 if parent.isValid() else len(self.rows)
-
-    def columnCount(self, parent: _Index = QModelIndex()) -> int:  # noqa: N802, B008  (Qt's)
-        """Return the number of columns."""
-        return 0 if parent.isValid() else len(_HEADS)
-
-    def headerData(self, section: int, orientation: Qt.Orientation, role: int = _Role.DisplayRole) -> Any:  # noqa: N802
-        """Return the heading of a column."""
-        if orientation == Qt.Orientation.Horizontal and role == _Role.DisplayRole:
-            return _CONVERTED_HEADS[self._system] if section == CONVERTED else _HEADS[section]
-        return None
-
-    def flags(self, index: _Index) -> Qt.ItemFlag:
-        """Values and tolerances can be edited."""
-        flags = Qt.ItemFlag.ItemIsEnabled | Qt.ItemFlag.ItemIsSelectable
-        return flags | Qt.ItemFlag.ItemIsEditable if self._address(index) else flags
-
-    def _address(self, index: _Index) -> Any:
-        if not index.isValid():
-            return None
-        row = self.rows[index.row()]
-        return {TYPED: row.address, TOLERANCE: row.tolerance_address}.get(index.column())
-
-    def _refusal(self, index: _Index) -> tuple[str, str] | None:
-        """Return the refused text and its reason, if one stands in this cell."""
-        return self._refusals.get((self.rows[index.row()].address, index.column()))
-
-    def data(self, index: _Index, role: int = _Role.DisplayRole) -> Any:
-        """Return what a cell shows."""
-        if not index.isValid():
-            return None
-        refusal = self._refusal(index)
-        if role == _Role.DisplayRole:
-            return refusal[0] if refusal else self._shown(index)
-        if role == _Role.EditRole:
-            return refusal[0] if refusal else self._own_text(index)
-        if role in (_Role.ToolTipRole, _Role.AccessibleDescriptionRole):
-            return refusal[1] if refusal else None
-        if role == _Role.ForegroundRole:
-            return self._colour(index, refused=refusal is not None)
-        return None
-
-    def _own_text(self, index: _Index) -> str:
-        row = self.rows[index.row()]
-        return row.tolerance if index.column() == TOLERANCE else row.text
-
-    def _shown(self, index: _Index) -> str:
-        row = self.rows[index.row()]
-        column = index.column()
-        if column == PART:
-            before = self.rows[index.row() - 1] if index.row() else None
-            return row.part if before is None or before.part != row.part else ""
-        if column == CONVERTED:
-            reason = self._row_reason(row)
-            return f"not used: {reason}" if reason else row.converted
-        if column == TOLERANCE:
-            return row.tolerance or row.inherited
-        return row.what if column == WHAT else row.text
-
-    def _row_reason(self, row: ValueRow) -> str:
-        """Return why an entry of this line is refused, "" when none is."""
-        for column in (TYPED, TOLERANCE):
-            refusal = self._refusals.get((row.address, column))
-            if refusal:
-                return refusal[1]
-        return ""
-
-    def _colour(self, index: _Index, *, refused: bool) -> QColor | None:
-        row = self.rows[index.row()]
-        if refused or (index.column() == CONVERTED and self._row_reason(row)):
-            return QColor(self._theme.in_band)
-        quiet = index.column() in (WHAT, CONVERTED) or (index.column() == TOLERANCE and not row.tolerance)
-        return QColor(self._theme.quiet) if quiet else None
-
-    def setData(self, index: _Index, value: Any, role: int = _Role.EditRole) -> bool:  # noqa: N802  (Qt's)
-        """Type into a cell; a refused text stays with its reason, an empty one gives back what was."""
-        address = self._address(index)
-        if role != _Role.EditRole or address is None:
-            return False
-        text = str(value).strip()
-        key = (self.rows[index.row()].address, index.column())
-        refusal = self._refusals.pop(key, None)
-        try:
-            if not (refusal and not text):
-                self._document.type_value(address, text)
-        except InputError as error:
-            self._refusals[key] = (text, str(error))
-            self.refused.emit(str(error))
-        self.dataChanged.emit(self.index(index.row(), 0), self.index(index.row(), TOLERANCE))
-        return True
-
-    def text_at(self, row: int, column: int) -> str:
-        """Return what a cell hands to the clipboard: a tolerance only where it is the value's own."""
-        if column == PART:
-            return self.rows[row].part
-        return str(
-            self.data(self.index(row, column), _Role.EditRole if column in _TYPED else _Role.DisplayRole)
-        )
-
-    def type_block(self, row: int, column: int, cells: list[list[str]]) -> tuple[int, int, int]:
-        """Type a block of texts from a cell on, as one edit.
-
-        Empty texts and those over what cannot be typed are passed over. Returns how many texts were taken,
-        how many were refused (they stay in sight with their reasons), and how many found no place.
-        """
-        typed: dict[Any, tuple[tuple[Any, int], str]] = {}
-        outside = 0
-        for down, line in enumerate(cells):
-            for across, text in enumerate(line):
-                if not text.strip():
-                    continue
-                index = self.index(row + down, column + across)
-                address = self._address(index)
-                if address is not None:
-                    key = (self.rows[index.row()].address, index.column())
-                    typed[address] = key, text.strip()
-                outside += not index.isValid()
-        for key, _ in typed.values():
-            self._refusals.pop(key, None)
-        count = len(typed)
-        reasons = self._document.type_values(
-            [(address, text) for address, (_, text) in typed.items()], f"paste {count} values"
-        )
-        for address, error in reasons.items():
-            key, text = typed[address]
-            self._refusals[key] = text, str(error)
-            self.refused.emit(str(error))
-        self.dataChanged.emit(self.index(0, 0), self.index(len(self.rows) - 1, TOLERANCE))
-        return count - len(reasons), len(reasons), outside
+__all__ = ["CONVERTED", "PART", "TOLERANCE", "TYPED", "WHAT", "PartTable", "PartTablePage"]
 
 
 class PartTable(QTableView):
@@ -225,16 +46,32 @@ class PartTable(QTableView):
         head.setStretchLastSection(False)
         head.setSectionResizeMode(CONVERTED, QHeaderView.ResizeMode.Stretch)
         self.selectionModel().currentChanged.connect(self._on_current_changed)
+        self._wanted = ""  # id of the part whose lines are still being counted
+        self.lines.modelAboutToBeReset.connect(self._on_reset_begun)
+        self.lines.modelReset.connect(self._on_reset)
 
     def show_model(self, model: Any, *, anew: bool, system: str = "SI") -> None:
         """Show the values of a model."""
         self.lines.show_model(model, anew=anew, system=system)
         if anew:
+            self._wanted = ""
             self.fit_columns()
-            quiet = self.blockSignals(True)  # choosing the first value is nobody's wish to see that part
-            self.setCurrentIndex(self.lines.index(0, TYPED))
-            self.blockSignals(quiet)
+            self._on_reset()
             self.horizontalScrollBar().setValue(0)
+
+    def _on_reset_begun(self) -> None:
+        current = self.currentIndex()
+        if current.isValid() and not self._wanted:
+            self._wanted = self.lines.rows[current.row()].part_id
+
+    def _on_reset(self) -> None:
+        """Stay at the part that was chosen, else begin at the first value; neither is anybody's new wish."""
+        quiet = self.blockSignals(True)
+        row = max(self.lines.row_of_part(self._wanted), 0)
+        self.setCurrentIndex(self.lines.index(row, TYPED))
+        self.blockSignals(quiet)
+        if not self.lines.counting:
+            self._wanted = ""
 
     def fit_columns(self) -> None:
         """Make columns and lines as large as the text needs."""
@@ -244,11 +81,16 @@ class PartTable(QTableView):
             self.setColumnWidth(column, characters * wide)
 
     def choose_part(self, part_id: str) -> None:
-        """Go to the first value of a part."""
+        """Go to the first value of a part; stay where one of its values is chosen already."""
+        here = self.currentIndex()
+        if here.isValid() and self.lines.rows[here.row()].part_id == part_id:
+            return
         row = self.lines.row_of_part(part_id)
         if row >= 0:
             self.setCurrentIndex(self.lines.index(row, TYPED))
             self.scrollTo(self.currentIndex(), QAbstractItemView.ScrollHint.PositionAtTop)
+        elif self.lines.counting:
+            self._wanted = part_id
 
     def _on_current_changed(self, current: QModelIndex) -> None:
         if current.isValid():
@@ -286,17 +128,100 @@ class PartTable(QTableView):
             words.append(f"{outside} lie beyond the table")
         self.told.emit("; ".join(words))
 
+    def moveCursor(self, action: Any, modifiers: Any) -> QModelIndex:  # noqa: N802  (Qt's name)
+        """Home and End go to what can be typed, with Ctrl in the whole table; Tab to the next such cell."""
+        here, actions = self.currentIndex(), QAbstractItemView.CursorAction
+        last = self.lines.rowCount() - 1
+        if not here.isValid():
+            return super().moveCursor(action, modifiers)
+        ctrl = bool(modifiers & Qt.KeyboardModifier.ControlModifier)
+        if action == actions.MoveHome:
+            return self.lines.index(0 if ctrl else here.row(), TYPED)
+        if action == actions.MoveEnd:
+            row = last if ctrl else here.row()
+            return self.lines.index(row, TYPED if ctrl else self._last_typed(row))
+        if action in (actions.MoveNext, actions.MovePrevious):
+            return self._next_typed(here, 1 if action == actions.MoveNext else -1)
+        return super().moveCursor(action, modifiers)
+
+    def _last_typed(self, row: int) -> int:
+        return TOLERANCE if self.lines.rows[row].tolerance_address else TYPED
+
+    def _next_typed(self, here: QModelIndex, step: int) -> QModelIndex:
+        """Return the next cell that can be typed in, line by line; the same at either end of the table."""
+        row, column = here.row(), here.column()
+        if step > 0 and column < TYPED:
+            column = TYPED
+        elif step > 0 and column < self._last_typed(row):
+            column = TOLERANCE
+        elif step < 0 and column > TYPED:
+            column = TYPED
+        elif 0 <= row + step < self.lines.rowCount():
+            row += step
+            column = TYPED if step > 0 else self._last_typed(row)
+        return self.lines.index(row, column)
+
+    def event(self, event: Any) -> bool:
+        """Take Ctrl+Z where a refused entry stands: that is what was typed last."""
+        undo = event.type() == QEvent.Type.ShortcutOverride and event.matches(QKeySequence.StandardKey.Undo)
+        if undo and self.lines.has_refusals:
+            event.accept()
+            return True
+        return super().event(event)
+
     def keyPressEvent(self, event: Any) -> None:  # noqa: N802  (Qt's name)
-        """Enter edits, as F2 does; copy and paste."""
-        if event.matches(QKeySequence.StandardKey.Copy):
-            self.copy()
-            return
-        if event.matches(QKeySequence.StandardKey.Paste):
-            self.paste()
-            return
-        enter = event.key() in (Qt.Key.Key_Return, Qt.Key.Key_Enter)
+        """Enter edits, as F2 does; Delete empties; copy and paste; Ctrl+Z takes a refused entry back."""
+        keys = (
+            (QKeySequence.StandardKey.Copy, self.copy),
+            (QKeySequence.StandardKey.Paste, self.paste),
+            (QKeySequence.StandardKey.Undo, self.lines.forget_last_refusal),
+        )
+        for key, do in keys:
+            if event.matches(key):
+                do()
+                return
         plain = event.modifiers() in (Qt.KeyboardModifier.NoModifier, Qt.KeyboardModifier.KeypadModifier)
-        if enter and plain and self.state() != QAbstractItemView.State.EditingState:
-            self.edit(self.currentIndex())
-        else:
-            super().keyPressEvent(event)
+        if plain and self.state() != QAbstractItemView.State.EditingState:
+            if event.key() in (Qt.Key.Key_Return, Qt.Key.Key_Enter):
+                self._edit_line()
+                return
+            if event.key() == Qt.Key.Key_Delete:
+                self.lines.setData(self.currentIndex(), "")
+                return
+        super().keyPressEvent(event)
+
+    def _edit_line(self) -> None:
+        """Edit the current cell; in a column that cannot be typed in, the value of its line."""
+        here = self.currentIndex()
+        if here.isValid() and not self.lines.flags(here) & Qt.ItemFlag.ItemIsEditable:
+            self.setCurrentIndex(here.siblingAtColumn(TYPED))
+        self.edit(self.currentIndex())
+
+
+class PartTablePage(QWidget):
+    """The table, and below it the whole reason where the chosen line holds an entry that is refused."""
+
+    def __init__(self, table: PartTable, parent: QWidget | None = None) -> None:
+        super().__init__(parent)
+        self._table = table
+        self.reason = QLabel(self)
+        self.reason.setWordWrap(True)
+        self.reason.setMargin(6)
+        self.reason.setProperty("role", "refusal")
+        self.reason.setAccessibleName("Why the entry is refused")
+        self.reason.setTextInteractionFlags(Qt.TextInteractionFlag.TextSelectableByMouse)
+        self.reason.hide()
+        layout = QVBoxLayout(self)
+        layout.setContentsMargins(0, 0, 0, 0)
+        layout.setSpacing(0)
+        layout.addWidget(table, 1)
+        layout.addWidget(self.reason)
+        self.setFocusProxy(table)
+        table.selectionModel().currentChanged.connect(self._tell)
+        table.lines.refusals_changed.connect(self._tell)
+        table.lines.modelReset.connect(self._tell)
+
+    def _tell(self) -> None:
+        reason = self._table.lines.reason_at(self._table.currentIndex())
+        self.reason.setText(reason)
+        self.reason.setVisible(bool(reason))

@@ -142,6 +142,11 @@ class Sheet(QWidget):
         if self._view is None and self._geometry is not None:
             self._view = self._geometry.view
 
+    @property
+    def settled(self) -> bool:
+        """Whether what is shown is the model as it stands, laid out and painted."""
+        return not (self._later.isActive() or self._background.waits_for("sheet"))
+
     def fit(self) -> None:
         """Show the whole model."""
         self._view = None

@@ -336,7 +336,7 @@ class Window(Frame):
         self._settings.set(names.GEOMETRY, self.saveGeometry())
         self.filing.reading.close()
         self._worker.close()
-        for place in (self.sheet, self.modes.row.card, self.damped.row.card):
+        for place in (self.sheet, self.parts.lines, self.modes.row.card, self.damped.row.card):
             place.close_threads()
         self.closed.emit()
         super().closeEvent(event)

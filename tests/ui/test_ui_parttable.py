@@ -1,10 +1,17 @@
+from dataclasses import replace
+
 import pytest
 from conftest import settle
 from PySide6.QtCore import QItemSelection, QItemSelectionModel, Qt
 from PySide6.QtGui import QGuiApplication
 from PySide6.QtWidgets import QLineEdit
 
+from modalview.model.editable import editable_fields
+from modalview.places import demo_models
+from modalview.store import read_model
+from modalview.ui import partlines
 from modalview.ui.parttable import CONVERTED, PART, TOLERANCE, TYPED, WHAT
+from modalview.ui.values import Lines
 
 
 def index_of(window, part, what, column):
@@ -163,3 +170,120 @@ def test_what_lies_beyond_the_table_is_told(pump, qtbot):
     paste(pump, qtbot, "3 %\n4 %\n5 %\n")
     assert told == ["1 value pasted; 2 lie beyond the table"]
     settle(qtbot, pump)
+
+
+def test_the_whole_reason_of_a_refused_entry_stands_below_the_table(pump):
+    pump.on_go_to_values()
+    index = index_of(pump, "motor", "mass", TYPED)
+    pump.parts.setCurrentIndex(index)
+    below = pump.parts.parentWidget().reason
+    assert below.isHidden()
+    pump.parts.lines.setData(index, "1,200 kg")
+    assert not below.isHidden()
+    assert below.text().startswith("motor, mass: “1,200 kg” is not used. ")
+    reason = index.data(Qt.ItemDataRole.ToolTipRole)
+    assert reason in below.text()
+    assert index.siblingAtColumn(CONVERTED).data(Qt.ItemDataRole.ToolTipRole) == reason
+    pump.parts.setCurrentIndex(index_of(pump, "pump", "mass", TYPED))
+    assert below.isHidden()
+
+
+def test_undo_takes_the_refused_entry_back_first_then_the_edit_before(pump, qtbot):
+    pump.on_go_to_values()
+    pump.activateWindow()
+    pump.parts.lines.setData(index_of(pump, "pump", "mass", TYPED), "400 kg")
+    index = index_of(pump, "motor", "mass", TYPED)
+    pump.parts.lines.setData(index, "heavy")
+    qtbot.keyClick(pump.parts, Qt.Key.Key_Z, Qt.KeyboardModifier.ControlModifier)
+    assert index.data() == "620 kg"
+    assert pump.document.modified
+    pump.document.stack.undo()
+    assert not pump.document.modified
+    settle(qtbot, pump)
+
+
+def test_undoing_an_edit_takes_refused_entries_back(pump, qtbot):
+    pump.parts.lines.setData(index_of(pump, "pump", "mass", TYPED), "400 kg")
+    index = index_of(pump, "motor", "mass", TYPED)
+    pump.parts.lines.setData(index, "heavy")
+    pump.document.stack.undo()
+    assert index_of(pump, "motor", "mass", TYPED).data() == "620 kg"
+    settle(qtbot, pump)
+
+
+@pytest.mark.parametrize(
+    ("key", "ctrl", "line", "column"),
+    [
+        (Qt.Key.Key_Home, True, 0, TYPED),
+        (Qt.Key.Key_Home, False, 1, TYPED),
+        (Qt.Key.Key_End, False, 1, TOLERANCE),
+        (Qt.Key.Key_End, True, -1, TYPED),
+    ],
+)
+def test_home_and_end_go_to_what_can_be_typed(pump, qtbot, key, ctrl, line, column):
+    pump.on_go_to_values()
+    pump.parts.setCurrentIndex(index_of(pump, "motor", "mass", WHAT))
+    held = Qt.KeyboardModifier.ControlModifier if ctrl else Qt.KeyboardModifier.NoModifier
+    qtbot.keyClick(pump.parts, key, held)
+    here = pump.parts.currentIndex()
+    assert (here.row(), here.column()) == (line % pump.parts.lines.rowCount(), column)
+
+
+def test_tab_in_a_cell_goes_to_the_next_that_can_be_typed_in(pump, qtbot):
+    pump.on_go_to_values()
+    pump.parts.setCurrentIndex(index_of(pump, "motor", "mass", TYPED))
+    places = []
+    for _ in range(2):
+        qtbot.keyClick(pump.parts, Qt.Key.Key_F2)
+        qtbot.keyClick(pump.parts.viewport().findChildren(QLineEdit)[-1], Qt.Key.Key_Tab)
+        places.append(pump.parts.currentIndex())
+    mass, after = index_of(pump, "motor", "mass", TOLERANCE), places[1]
+    assert places[0] == mass
+    assert (after.row(), after.column()) == (mass.row() + 1, TYPED)
+
+
+def test_enter_on_a_name_edits_the_value_of_its_line(pump, qtbot):
+    pump.on_go_to_values()
+    pump.parts.setCurrentIndex(index_of(pump, "motor", "mass", PART))
+    qtbot.keyClick(pump.parts, Qt.Key.Key_Return)
+    assert pump.parts.currentIndex() == index_of(pump, "motor", "mass", TYPED)
+    assert pump.parts.viewport().findChild(QLineEdit).text() == "620 kg"
+
+
+def test_delete_takes_a_tolerance_away(pump, qtbot):
+    pump.on_go_to_values()
+    pump.parts.setCurrentIndex(index_of(pump, "base support", "stiffness", TOLERANCE))
+    qtbot.keyClick(pump.parts, Qt.Key.Key_Delete)
+    assert pump.document.model.links[2].stiffness.tolerance is None
+    settle(qtbot, pump)
+
+
+def test_lines_of_many_parts_are_counted_in_a_thread_and_made_when_seen(pump, qtbot, monkeypatch):
+    expected = list(pump.parts.lines.rows)
+    monkeypatch.setattr(partlines, "AT_ONCE", 0)
+    pump.parts.show_model(pump.document.model, anew=True)
+    assert pump.parts.lines.counting
+    assert len(pump.parts.lines.rows) == 0 or not pump.parts.lines.row_of_part("k3") >= 0
+    pump.parts.choose_part("k3")  # not there yet
+    qtbot.waitUntil(lambda: not pump.parts.lines.counting)
+    assert list(pump.parts.lines.rows) == expected
+    assert pump.parts.lines.rows[pump.parts.currentIndex().row()].part_id == "k3"
+
+
+@pytest.mark.parametrize("path", sorted(demo_models().glob("*/*.keepclear")), ids=lambda one: one.stem)
+def test_as_many_lines_are_counted_as_are_made(path):
+    model = read_model(path)
+    lines = Lines(model)
+    fields = [editable_fields(model, part.address) for part in lines.parts]
+    kept = [field for some in fields for field in some if field.name not in ("notes", "units")]
+    assert [row.address for row in lines] == [field.address for field in kept]
+    assert len(Lines(model, before=lines)) == len(lines)
+
+
+def test_lines_of_a_changed_part_are_counted_anew(pump):
+    before = pump.parts.lines.rows
+    motor = pump.document.model.bodies[0]
+    bodies = (replace(motor, inertia=None, dof=None, position=None), *pump.document.model.bodies[1:])
+    after = Lines(replace(pump.document.model, bodies=bodies), before=before)
+    assert len(after) == len(Lines(replace(pump.document.model, bodies=bodies)))
+    assert not after.like(before)
