@@ -208,6 +208,10 @@ class Session:
         )
 
     def _tidy(self, name: str) -> None:
+        """Take away what is of no use: a file half written, and the lock of a session without files."""
+        for half in self.folder.glob(f".{name}.*.tmp"):
+            with suppress(OSError):
+                half.unlink(missing_ok=True)
         if not self._files(name):
             self._claims.pop(name).remove()
 

@@ -9,10 +9,10 @@ from pathlib import Path
 from PySide6.QtCore import QMessageLogContext, QTimer, QtMsgType, qInstallMessageHandler
 from PySide6.QtWidgets import QApplication
 
-from modalview.ui.failure import show_unexpected
+from modalview.ui.autosave import recovery_folder
 from modalview.ui.settings import Settings, kept_settings
 from modalview.ui.window import Window
-from modalview.ui.worker import Worker
+from modalview.ui.windows import Windows, keep_what_is_open, new_session
 
 # A call into Qt gives the interpreter lock away, and to get it back waits for so long while another thread
 # computes. With Python's own 5 ms every painting of 50 calls took a quarter of a second during a study.
@@ -32,10 +32,8 @@ def application(arguments: Sequence[str] = ("keepclear",)) -> QApplication:
 
 
 def new_window(settings: Settings) -> Window:
-    """Return a window with its own thread, which starts after the first paint."""
-    window = Window(settings, Worker())
-    QTimer.singleShot(0, window, window.start_worker)
-    return window
+    """Return a window that keeps no recovery files, for pictures and trials."""
+    return Windows(settings).add()
 
 
 def run(file: Path | None, without_screen: str) -> int:
@@ -55,23 +53,32 @@ def run(file: Path | None, without_screen: str) -> int:
     qInstallMessageHandler(on_message)
     program = application()
     qInstallMessageHandler(None)
-    sys.excepthook = show_unexpected
-    window = new_window(kept_settings())
-    program.styleHints().colorSchemeChanged.connect(window.apply_theme)
-    close_on_interrupt(window)
-    window.show()
+    session, why_none = new_session(recovery_folder())
+    windows = Windows(kept_settings(), session)
+    sys.excepthook = keep_what_is_open(windows)
+    program.styleHints().colorSchemeChanged.connect(windows.apply_theme)
+    program.commitDataRequest.connect(windows.keep_all)
+    close_on_interrupt(windows)
+    window = windows.add_shown()
+    if why_none:
+        window.tell(f"No recovery copies are kept: {why_none}")
     if file is not None:
         QTimer.singleShot(0, window, lambda: window.filing.open(file))
-    return program.exec()
+    if session is not None:
+        QTimer.singleShot(0, window, lambda: windows.offer_recovered(window, asked=False))
+    status = program.exec()
+    if session is not None:
+        session.close()
+    return status
 
 
-def close_on_interrupt(window: Window) -> None:
-    """Let Ctrl+C in the terminal close the window as its own button does, asking about unsaved changes.
+def close_on_interrupt(windows: Windows) -> None:
+    """Let Ctrl+C in the terminal quit as the menu does, asking about unsaved changes.
 
     The handler runs in the middle of whatever runs, painting too, so it only orders the closing. While Qt
     waits no Python runs at all: the timer lets it look for a signal four times a second.
     """
-    signal.signal(signal.SIGINT, lambda *_: QTimer.singleShot(0, window, window.close))
-    heartbeat = QTimer(window)
+    signal.signal(signal.SIGINT, lambda *_: QTimer.singleShot(0, windows, windows.quit))
+    heartbeat = QTimer(windows)
     heartbeat.timeout.connect(lambda: None)
     heartbeat.start(HEARTBEAT_MS)

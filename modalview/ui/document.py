@@ -7,7 +7,7 @@ from pathlib import Path
 from PySide6.QtCore import QObject, Signal
 from PySide6.QtGui import QUndoStack
 
-from modalview.errors import InputError
+from modalview.errors import FileChangedError, InputError
 from modalview.model.addresses import Address
 from modalview.model.edits import Edit, set_typed
 from modalview.model.parts import Model
@@ -31,7 +31,8 @@ class Document(QObject):
         self.model: Model | None = None
         self.path: Path | None = None
         self.example = False  # bundled examples are opened, never written
-        self._stamp: FileStamp | None = None
+        self.recovered = False  # left by a crash, and not yet saved: its file holds something else
+        self.stamp: FileStamp | None = None  # the file when it was last opened or saved
         self.saved_at: float | None = None
         self.stack = QUndoStack(self)
         self.stack.cleanChanged.connect(self.clean_changed)
@@ -52,22 +53,50 @@ class Document(QObject):
 
     def show_read(self, model: Model, stamp: FileStamp, path: Path, *, example: bool = False) -> None:
         """Show a model that was read from a file."""
+        self._begin(model, path, stamp, example=example)
+
+    def start(self, model: Model) -> None:
+        """Begin a model that has no file yet."""
+        self._begin(model, None, None)
+
+    def recover(self, model: Model, path: Path | None, stamp: FileStamp | None, *, example: bool) -> None:
+        """Open what a crash left: modified, and never saved over its file unasked."""
+        self._begin(model, path, stamp, example=example, recovered=True)
+
+    def _begin(
+        self,
+        model: Model,
+        path: Path | None,
+        stamp: FileStamp | None,
+        *,
+        example: bool = False,
+        recovered: bool = False,
+    ) -> None:
         self.model = model
-        self.path, self.example, self._stamp = path, example, stamp
+        self.path, self.example, self.stamp, self.recovered = path, example, stamp, recovered
         self.saved_at = None
         self.stack.clear()
+        if recovered:
+            self.stack.resetClean()
         self.opened.emit()
 
     def save(self, path: Path, *, overwrite: bool = False) -> None:
-        """Save under a path; FileChangedError when another program wrote there, unless ``overwrite``."""
+        """Save under a path; FileChangedError when its file holds something else, unless ``overwrite``."""
         if self.model is None:
             return
-        known = self._stamp if path == self.path and not overwrite else None
-        self._stamp = save_model(self.model, path, known=known)
-        self.path, self.example = path, False
+        guarded = path == self.path and not overwrite
+        known = self.stamp if guarded else None
+        if guarded and self.recovered and path.exists():
+            raise FileChangedError(f"{path} holds what was last saved, not what was recovered")
+        self.stamp = save_model(self.model, path, known=known)
+        self.path, self.example, self.recovered = path, False, False
         self.saved_at = time.monotonic()
         self.stack.setClean()
         self.saved.emit()
+
+    def lose_file(self) -> None:
+        """Its file is gone: the window alone holds the model, so that it counts as not saved."""
+        self.stack.resetClean()
 
     def type_value(self, address: Address, text: str) -> None:
         """Type a text at an address; InputError with the reason when it is refused, changing nothing."""

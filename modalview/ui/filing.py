@@ -20,6 +20,8 @@ from modalview.ui.settings import Settings
 Then = Callable[[], None]
 _FILTER = f"Keepclear models (*{SUFFIX});;All files (*)"
 _RECENT_KEPT = 8
+# More faults than this make a question unreadable.
+_FAULTS_TOLD = 6
 
 
 class Filing(QObject):
@@ -29,6 +31,10 @@ class Filing(QObject):
         super().__init__(window)
         self._document, self._settings, self._window = document, settings, window
         self.reading = Errand(self)
+        # Brings the window to the front that has a file open already; there may be several windows.
+        self.shown_elsewhere: Callable[[Path], bool] = lambda _path: False
+        # Puts the model aside as a recovery; False where nothing can be kept.
+        self.put_aside: Callable[[], bool] | None = None
 
     def guard(self, then: Then) -> None:
         """Do something that would lose unsaved changes, after asking what to do with them."""
@@ -51,11 +57,17 @@ class Filing(QObject):
     def _choose(self) -> None:
         dialog = self._file_dialog("Open a model", QFileDialog.AcceptMode.AcceptOpen)
         dialog.setFileMode(QFileDialog.FileMode.ExistingFile)
-        dialog.fileSelected.connect(lambda path: self.read(Path(path)))
+        dialog.fileSelected.connect(lambda path: self._read_chosen(Path(path)))
         dialog.open()
 
+    def _read_chosen(self, path: Path) -> None:
+        if not self.shown_elsewhere(path):
+            self.read(path)
+
     def open(self, path: Path, *, example: bool = False) -> None:
-        """Open a file, after asking about unsaved changes."""
+        """Open a file, after asking about unsaved changes; one that is open already comes to the front."""
+        if not example and self.shown_elsewhere(path):
+            return
         self.guard(lambda: self.read(path, example=example))
 
     def read(self, path: Path, *, example: bool = False) -> None:
@@ -95,6 +107,17 @@ class Filing(QObject):
         self._settings.set(names.RECENT, [place, *recent][:_RECENT_KEPT])
         self._settings.set(names.FOLDER, str(path.resolve().parent))
 
+    def recent(self) -> list[tuple[Path, str]]:
+        """Return the files opened last, each with why it cannot be opened, or "".
+
+        One that is gone is told this once and then forgotten; one on a disk that is not there is kept.
+        """
+        told = [(Path(one), _missing(Path(one))) for one in self._settings.get(names.RECENT)]
+        kept = [str(path) for path, why in told if why != _GONE]
+        if len(kept) < len(told):
+            self._settings.set(names.RECENT, kept)
+        return told
+
     # Saving
 
     def save(self, then: Then | None = None) -> None:
@@ -118,22 +141,52 @@ class Filing(QObject):
         try:
             self._document.save(path, overwrite=overwrite)
         except FileChangedError:
-            ask(
-                self._window,
-                f"{path.name} was changed by another program since it was opened.",
-                "Overwriting keeps the other version as one backup beside it.",
-                (
-                    ("Save as…", lambda: self.save_as(then)),
-                    ("Overwrite", lambda: self._write(path, then, overwrite=True)),
-                    ("Cancel", None),
-                ),
-            )
+            self._ask_over(path, then)
+        except FaultsError as error:
+            self._tell_unfinished(error, then)
         except InputError as error:
             self._tell("The model was not saved.", error)
         else:
             self._remember(path)
             if then is not None:
                 then()
+
+    def _ask_over(self, path: Path, then: Then | None) -> None:
+        recovered = self._document.recovered
+        ask(
+            self._window,
+            f"{path.name} holds what was last saved, not what was recovered."
+            if recovered
+            else f"{path.name} was changed by another program since it was opened.",
+            "Overwriting keeps the other version as one backup beside it.",
+            (
+                ("Save as…", lambda: self.save_as(then)),
+                ("Overwrite", lambda: self._write(path, then, overwrite=True)),
+                ("Cancel", None),
+            ),
+        )
+
+    def _tell_unfinished(self, error: FaultsError, then: Then | None) -> None:
+        """Tell that a half-drawn model is no file yet; who wanted to leave it can put it aside."""
+        lines = [str(fault) for fault in error.faults[:_FAULTS_TOLD]]
+        more = len(error.faults) - len(lines)
+        text = "\n".join([*lines, f"and {more} more" if more > 0 else ""]).strip()
+        if then is None or self.put_aside is None:
+            ask(self._window, "The model was not saved: it breaks rules.", text, (("Close", None),))
+            return
+
+        def keep() -> None:
+            if self.put_aside():
+                then()
+            else:
+                self._tell("The model could not be put aside.", InputError("Save it, or leave it open."))
+
+        ask(
+            self._window,
+            "The model was not saved: it breaks rules.",
+            f"{text}\n\nPut aside, it is offered at the next start and under File, Recovered models.",
+            (("Put aside", keep), ("Go on with it", None)),
+        )
 
     def _tell(self, text: str, error: InputError) -> None:
         ask(self._window, text, str(error), (("Close", None),))
@@ -143,3 +196,13 @@ class Filing(QObject):
         dialog.setAcceptMode(mode)
         dialog.setAttribute(Qt.WidgetAttribute.WA_DeleteOnClose)
         return dialog
+
+
+_GONE = "moved, renamed or deleted"
+
+
+def _missing(path: Path) -> str:
+    """Return why a file is not there, or nothing."""
+    if path.exists():
+        return ""
+    return _GONE if path.parent.exists() else "its folder cannot be reached"

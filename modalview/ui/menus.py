@@ -2,21 +2,28 @@
 
 from collections.abc import Callable
 from dataclasses import dataclass
+from operator import attrgetter
 
 from PySide6.QtGui import QAction, QKeySequence
 from PySide6.QtWidgets import QMainWindow, QMenu
+
+from modalview.ui.sketch.kinds import TOOLS
 
 Key = QKeySequence.StandardKey | str | None
 
 
 @dataclass(frozen=True, slots=True)
 class Item:
-    """One line of a menu; ``do`` names a method of the window, ``checked`` makes it a switch."""
+    """One line of a menu; ``do`` names a method of the window or of a place in it, or what is filled in.
+
+    ``checkable`` makes it a switch; ``inner`` lines make it a menu of its own.
+    """
 
     text: str
     do: str
     key: Key = None
     checkable: bool = False
+    inner: tuple["Item", ...] = ()
 
 
 SEPARATOR = Item("", "")
@@ -24,14 +31,21 @@ _KEYS = QKeySequence.StandardKey
 
 MENUS: dict[str, tuple[Item, ...]] = {
     "&File": (
+        Item("&New", "on_new", _KEYS.New),
+        Item("New &window", "on_new_window", "Ctrl+Shift+N"),
         Item("&Open…", "on_open", _KEYS.Open),
         Item("Open &example", "examples"),
         Item("Open &recent", "recent"),
         SEPARATOR,
         Item("&Save", "on_save", _KEYS.Save),
         Item("Save &as…", "on_save_as", "Ctrl+Shift+S"),
+        Item("Reco&vered models…", "on_recovered"),
         SEPARATOR,
-        Item("&Quit", "close", "Ctrl+Q"),
+        Item("&Print…", "on_print", _KEYS.Print),
+        Item("Print &to PDF…", "on_print_to_pdf", "Ctrl+Shift+P"),
+        SEPARATOR,
+        Item("&Close the window", "close", _KEYS.Close),
+        Item("&Quit", "on_quit", "Ctrl+Q"),
     ),
     "&Edit": (
         Item("&Undo", "undo", _KEYS.Undo),
@@ -42,8 +56,42 @@ MENUS: dict[str, tuple[Item, ...]] = {
         SEPARATOR,
         Item("&Settings…", "on_settings", "Ctrl+,"),
     ),
+    "&Parts": (
+        Item("&Duplicate", "sketching.editing.duplicate", "Ctrl+D"),
+        Item("D&elete", "sketching.hand.delete"),
+        Item("C&ut", "sketching.editing.cut"),
+        Item("&Copy", "sketching.editing.copy"),
+        Item("&Paste", "sketching.editing.paste"),
+        SEPARATOR,
+        Item("Choose &all", "sketching.editing.choose_all"),
+        Item("Choose all of the same &kind", "sketching.editing.choose_alike", "Ctrl+K"),
+        Item("&Find a part…", "sketching.editing.find", _KEYS.Find),
+        Item("&Type values", "sketching.ask_chosen", "Ctrl+T"),
+        SEPARATOR,
+        Item("&Mirror left and right", "sketching.editing.mirror_sideways"),
+        Item("Mirror a&bove and below", "sketching.editing.mirror_upright"),
+        Item("Turn a quarter &left", "sketching.editing.turn_left"),
+        Item("Turn a quarter &right", "sketching.editing.turn_right"),
+        Item("Tur&n…", "sketching.editing.turn_by"),
+        Item(
+            "Al&ign",
+            "align",
+            inner=(
+                Item("&Left edges", "sketching.editing.align_left"),
+                Item("&Centres sideways", "sketching.editing.align_centre"),
+                Item("&Right edges", "sketching.editing.align_right"),
+                Item("&Top edges", "sketching.editing.align_top"),
+                Item("&Middles upright", "sketching.editing.align_middle"),
+                Item("&Bottom edges", "sketching.editing.align_bottom"),
+                SEPARATOR,
+                Item("&Spread sideways", "sketching.editing.spread_sideways"),
+                Item("S&pread upright", "sketching.editing.spread_upright"),
+            ),
+        ),
+    ),
     "&View": (
         Item("&Fit the sheet", "on_fit", "Ctrl+0"),
+        Item("Fit what is &chosen", "sketching.editing.zoom_to_chosen", "Ctrl+Shift+0"),
         Item("Zoom &in", "on_zoom_in", _KEYS.ZoomIn),
         Item("Zoom &out", "on_zoom_out", _KEYS.ZoomOut),
         SEPARATOR,
@@ -92,6 +140,12 @@ class Menus:
             menu.addSeparator()
         elif item.do in ("undo", "redo"):
             self._add_undo(menu, item, window)
+        elif item.inner:
+            inner = menu.addMenu(item.text)
+            for one in item.inner:
+                self._add(inner, one, window)
+        elif "." in item.do:  # a place in the window, which comes after its menus
+            self._add_action(menu, item, lambda: attrgetter(item.do)(window)())
         elif hasattr(window, item.do):
             self._add_action(menu, item, getattr(window, item.do))
         else:
@@ -123,7 +177,7 @@ def keyboard_text() -> str:
     """Return the list of keys in markdown, read from the menus so that it cannot lie."""
     lines = ["# Keyboard", "", "| what | key |", "| --- | --- |"]
     for items in MENUS.values():
-        for item in items:
+        for item in (inner for one in items for inner in (one, *one.inner)):
             if item.key is not None:
                 key = QKeySequence(item.key).toString(QKeySequence.SequenceFormat.NativeText)
                 lines.append(f"| {item.text.replace('&', '').rstrip('…')} | {key} |")
@@ -137,7 +191,19 @@ _ELSEWHERE = (
     ("Copy and paste values, as a spreadsheet does", "Ctrl+C, Ctrl+V in the values"),
     ("Fold the reasoning", "Esc in it"),
     ("Choose a mode", "arrow keys in the row of modes"),
-    ("Zoom on the sheet", "wheel, + and -"),
-    ("Move the sheet", "arrow keys, middle button, or Space held and left button"),
+    ("Zoom on the sheet", "wheel, two fingers drawn apart, + and -"),
+    ("Move the sheet", "arrow keys, middle button, two fingers, or Space held and left button"),
+    *((f"Tool: {tool.label}", f"{tool.key} on the sheet") for tool in TOOLS),
+    ("Keep a tool in hand", "Shift with its key"),
+    ("Move the cross of a tool / what is chosen", "arrow keys; ten steps with Shift"),
+    ("Lead the cross to the next part / choose the next part", "Page Down, Page Up"),
+    ("Put a part, or an end of a link, where the cross is", "Enter"),
+    ("Type over the numbers beside a drag", "any digit"),
+    ("Type the values of what is chosen", "Enter"),
+    ("Keep straight / be drawn to nothing while drawing", "Shift / Alt held"),
+    ("Leave off, put the tool away, choose nothing", "Esc"),
+    ("Delete what is chosen, with what hangs on it", "Del on the sheet"),
+    ("Copy, cut and paste parts, also between windows", "Ctrl+C, Ctrl+X, Ctrl+V on the sheet"),
+    ("Choose all parts", "Ctrl+A on the sheet"),
     ("Next place in the window", "Tab, Shift+Tab"),
 )

@@ -109,6 +109,14 @@ UNITS = Setting(
         ("inch-pound", "inch and pound"),
     ),
 )
+PAPER = Setting(
+    "paper",
+    str,
+    "system",
+    "Size of paper for printing, across.",
+    "Paper",
+    (("system", "as usual in the country"), ("A4", "A4"), ("Letter", "Letter")),
+)
 MOVE = Setting("modes_move", bool, True, "The chosen mode moves; off shows it at its largest.")
 AMPLITUDE = Setting(
     "amplitude_percent", int, 60, "How far the chosen mode moves on the sheet.", low=5, high=100
@@ -125,6 +133,7 @@ ALL = (
     AUTOMATIC,
     DISCS,
     UNITS,
+    PAPER,
     MOVE,
     AMPLITUDE,
     SPEED,

@@ -66,7 +66,9 @@ def _milliseconds(seconds: float) -> str:
 
 def _saved(document: Document) -> str:
     if document.modified:
-        return "not saved"
+        return "recovered, not saved" if document.recovered else "not saved"
+    if document.path is None:
+        return "new, nothing to save yet"
     if document.saved_at is not None:
         return f"saved {ago(time.monotonic() - document.saved_at)}"
     return "example, unchanged" if document.example else "as on disk"

@@ -1,13 +1,15 @@
 """The window: puts the places together and passes on what was done in one to the others."""
 
 from pathlib import Path
-from typing import Any
+from typing import TYPE_CHECKING, Any
 
-from PySide6.QtCore import Qt, QTimer, Signal
+from PySide6.QtCore import QEvent, Qt, QTimer, Signal
 from PySide6.QtGui import QCloseEvent, QDragEnterEvent, QDropEvent
 
+from modalview.model.parts import Model
 from modalview.ui import settings as names
 from modalview.ui.analysis import Analysis
+from modalview.ui.autosave import Autosave
 from modalview.ui.dialogs import TextDialog
 from modalview.ui.document import Document
 from modalview.ui.examples import bundled_examples
@@ -16,11 +18,28 @@ from modalview.ui.filing import Filing
 from modalview.ui.frame import Frame
 from modalview.ui.modelist import is_damped
 from modalview.ui.modes import damped_evidence, evidence
-from modalview.ui.settings import Settings
+from modalview.ui.newsheet import NewSheet
+from modalview.ui.ondisk import DiskStrip, FileWatch
+from modalview.ui.printing import Printing
+from modalview.ui.settings import Setting, Settings
+from modalview.ui.sketch.sketching import Sketching
 from modalview.ui.worker import Worker
+
+if TYPE_CHECKING:
+    from modalview.ui.windows import Windows
 
 _TOLD_MS = 6000
 _BLINK_MS = 150
+_NEED_A_MODEL = (
+    "on_save",
+    "on_save_as",
+    "on_print",
+    "on_print_to_pdf",
+    "on_find",
+    "on_fit",
+    "on_zoom_in",
+    "on_zoom_out",
+)
 
 
 class Window(Frame):
@@ -28,12 +47,19 @@ class Window(Frame):
 
     closed = Signal()
 
-    def __init__(self, settings: Settings, worker: Worker) -> None:
+    def __init__(self, settings: Settings, worker: Worker, windows: "Windows | None" = None) -> None:
         super().__init__(settings, Document(), Analysis(worker))
         self.document.setParent(self)
         self.analysis.setParent(self)
         self._worker = worker
+        self.windows = windows  # the others of the program; None stands alone
         self.filing = Filing(self.document, settings, self)
+        self.autosave: Autosave | None = None
+        self.watch = FileWatch(self.document)
+        self.disk_strip = DiskStrip(self.watch, self.document, self.filing, self.work)
+        self.work.layout().insertWidget(1, self.disk_strip)
+        self.printing = Printing(self, settings)
+        self.sketching = Sketching(self)
         self._may_close = False
         # A file that is read in a blink is not told of.
         self._patience = QTimer(self, singleShot=True, interval=_BLINK_MS)
@@ -60,13 +86,12 @@ class Window(Frame):
         self.modes.mode_chosen.connect(self.on_mode_chosen)
         self.damped.mode_chosen.connect(self.on_mode_chosen)
         self.below.shown.connect(self.on_page_shown)
-        self.parts.part_chosen.connect(self.sheet.select)
         self.parts.told.connect(lambda words: self.statusBar().showMessage(words, _TOLD_MS))
-        self.sheet.part_chosen.connect(self.on_part_chosen)
         self.play_bar.moving_changed.connect(self.on_move)
         self.play_bar.speed_changed.connect(self.on_speed)
         self.play_bar.amplitude_changed.connect(self.on_amplitude)
         self.welcome.open_asked.connect(self.on_open)
+        self.welcome.new_asked.connect(self.on_new)
         self.welcome.example_chosen.connect(lambda path: self.filing.open(path, example=True))
         self.scale.discs_switched.connect(self.on_discs)
         self.menus.submenus["examples"].aboutToShow.connect(self._fill_examples)
@@ -110,23 +135,47 @@ class Window(Frame):
         """Let the thread begin; models opened before wait for it."""
         self._worker.start()
 
+    def keep_with(self, autosave: Autosave) -> None:
+        """Keep what the window holds beyond its file in a recovery file."""
+        self.autosave = autosave
+        self.filing.put_aside = autosave.put_aside
+        autosave.failed.connect(
+            lambda why: self.tell(f"No recovery copy could be written ({why}): save the model soon.")
+        )
+
+    def tell(self, words: str) -> None:
+        """Say something in the status line for a while."""
+        self.statusBar().showMessage(words, _TOLD_MS)
+
+    def new_model(self, model: Model) -> None:
+        """Begin a model without a file, after asking about unsaved changes; it is unmodified until edited."""
+        self.filing.guard(lambda: self.document.start(model))
+
     def show_document(self) -> None:
         """Show the open model, or what to do without one."""
         there = self.document.model is not None
         self.pages.setCurrentWidget(self.work if there else self.welcome)
-        for name in ("on_save", "on_save_as", "on_find", "on_fit", "on_zoom_in", "on_zoom_out"):
+        for name in _NEED_A_MODEL:
             self.menus.actions[name].setEnabled(there)
-        if there:
-            title = self.document.model.title or self.document.name
-            file = "example" if self.document.example else self.document.name
-            self.setWindowTitle(f"{title} ({file})[*] - Keepclear")
-        else:
-            self.setWindowTitle("Keepclear[*]")
+        for name in ("on_new_window", "on_recovered"):
+            self.menus.actions[name].setEnabled(self.windows is not None)
+        self._show_name()
         self.status.show_state(self.document, self.analysis)
+
+    def _show_name(self) -> None:
+        """Name model and file in the title bar."""
+        document = self.document
+        if document.model is None:
+            self.setWindowTitle("Keepclear[*]")
+            return
+        title = document.model.title or (document.name if document.path else "untitled")
+        file = "example" if document.example else document.name
+        file += ", recovered" if document.recovered else ""
+        self.setWindowTitle(f"{title} ({file})[*] - Keepclear")
 
     def on_opened(self) -> None:
         """Another model: everything anew."""
-        self.setWindowModified(False)
+        self.setWindowModified(self.document.modified)
         self.analysis.forget()
         self.results.forget_machines()
         self.show_document()
@@ -135,16 +184,17 @@ class Window(Frame):
 
     def on_model_changed(self) -> None:
         """Let sheet and tables follow at once, scale and verdict as soon as counted."""
+        self._show_name()
         self._show_model(anew=False)
 
     def _show_model(self, *, anew: bool) -> None:
         model = self.document.model
         self.sheet.show_model(model, fit=anew)
-        self.parts.show_model(model, anew=anew, system=self._system())
-        self.results.show_model(model, self._system())
+        self.parts.show_model(model, anew=anew, system=self.system_of_units())
+        self.results.show_model(model, self.system_of_units())
         self.analysis.follow(model)
 
-    def _system(self) -> str:
+    def system_of_units(self) -> str:
         """Return the system of units that values are shown in."""
         chosen = self._settings.get(names.UNITS)
         return (self.document.model.units or "SI") if chosen == "file" else chosen
@@ -152,8 +202,8 @@ class Window(Frame):
     def show_units(self) -> None:
         """Show converted values in the units chosen."""
         if self.document.model is not None:
-            self.parts.show_model(self.document.model, anew=False, system=self._system())
-            self.results.show_model(self.document.model, self._system())
+            self.parts.show_model(self.document.model, anew=False, system=self.system_of_units())
+            self.results.show_model(self.document.model, self.system_of_units())
 
     def _show_title(self, checked: str, freedoms: int) -> None:
         from modalview.drawing import furniture  # noqa: PLC0415  (numpy comes after the first paint)
@@ -243,6 +293,39 @@ class Window(Frame):
 
     # Commands of the menus
 
+    def on_new(self) -> None:
+        """Ask where to begin: an empty sheet, or a starting point."""
+        NewSheet(self.new_model, self).open()
+
+    def on_new_window(self) -> None:
+        """Open an empty window beside this one."""
+        self.windows.add_shown(self)
+
+    def on_recovered(self) -> None:
+        """List the models that were recovered or put aside."""
+        self.windows.offer_recovered(self, asked=True)
+
+    def on_print(self) -> None:
+        """Print sheet and scale."""
+        self.printing.print_()
+
+    def on_print_to_pdf(self) -> None:
+        """Write sheet and scale as a PDF file."""
+        self.printing.to_pdf()
+
+    def on_quit(self) -> None:
+        """Close all windows."""
+        if self.windows is not None:
+            self.windows.quit()
+        else:
+            self.close()
+
+    def on_setting(self, setting: Setting, value: Any) -> None:
+        """Keep a setting and let it hold at once, in all windows."""
+        super().on_setting(setting, value)
+        if self.windows is not None:
+            self.windows.share(self, setting, value)
+
     def on_open(self) -> None:
         """Open a file."""
         self.filing.choose()
@@ -308,32 +391,44 @@ class Window(Frame):
     def _fill_recent(self) -> None:
         menu = self.menus.submenus["recent"]
         menu.clear()
-        for place in self._settings.get(names.RECENT):
-            action = menu.addAction(place.replace("&", "&&"))
-            action.triggered.connect(lambda _checked=False, place=place: self.filing.open(Path(place)))
+        for path, why in self.filing.recent():
+            action = menu.addAction(str(path).replace("&", "&&") + (f" ({why})" if why else ""))
+            action.setEnabled(not why)
+            action.triggered.connect(lambda _checked=False, path=path: self.filing.open(path))
         if menu.isEmpty():
             menu.addAction("Nothing was opened yet").setEnabled(False)
 
     # Qt's own
 
     def dragEnterEvent(self, event: QDragEnterEvent) -> None:  # noqa: N802  (Qt's name)
-        """Take one local file."""
+        """Take local files."""
         if any(url.isLocalFile() for url in event.mimeData().urls()):
             event.acceptProposedAction()
 
     def dropEvent(self, event: QDropEvent) -> None:  # noqa: N802  (Qt's name)
-        """Open what was dropped."""
-        path = next(url.toLocalFile() for url in event.mimeData().urls() if url.isLocalFile())
+        """Open what was dropped: the first file here, the others in windows of their own."""
+        paths = [Path(url.toLocalFile()) for url in event.mimeData().urls() if url.isLocalFile()]
         event.acceptProposedAction()
-        self.filing.open(Path(path))
+        self.filing.open(paths[0])
+        if self.windows is not None:
+            for path in paths[1:]:
+                self.windows.open(path, self)
+
+    def changeEvent(self, event: QEvent) -> None:  # noqa: N802  (Qt's name)
+        """Look after the file when the window comes to the front: not every disk tells of changes."""
+        super().changeEvent(event)
+        if event.type() == QEvent.Type.ActivationChange and self.isActiveWindow():
+            self.watch.look()
 
     def closeEvent(self, event: QCloseEvent) -> None:  # noqa: N802  (Qt's name)
         """Ask about unsaved changes; then let the thread end."""
         if self.document.modified and not self._may_close:
             event.ignore()
-            self.filing.guard(self._close_unasked)
+            self.filing.guard(self.close_unasked)
             return
         self._settings.set(names.GEOMETRY, self.saveGeometry())
+        if self.autosave is not None:
+            self.autosave.close()
         self.filing.reading.close()
         self._worker.close()
         for place in (self.sheet, self.parts.lines, self.modes.row.card, self.damped.row.card):
@@ -341,6 +436,7 @@ class Window(Frame):
         self.closed.emit()
         super().closeEvent(event)
 
-    def _close_unasked(self) -> None:
+    def close_unasked(self) -> None:
+        """Close, now that unsaved changes were asked about."""
         self._may_close = True
         QTimer.singleShot(0, self.close)

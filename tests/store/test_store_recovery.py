@@ -185,6 +185,14 @@ def test_discarding_the_last_one_tidies_up(folder):
     assert list(folder.iterdir()) == []
 
 
+def test_what_was_half_written_is_taken_away(folder):
+    left = crashed(folder, draft())
+    half = folder / f".{left.name}.2.recovery.1a2b3c4d.tmp"
+    half.write_text("{", encoding="utf-8")
+    assert len(_Kept(folder).recoveries()[0]) == 1
+    assert not half.exists()
+
+
 def test_what_is_kept_for_later_is_offered_at_the_next_start(folder):
     crashed(folder, draft())
     session = _Kept(folder)

@@ -30,7 +30,8 @@ def test_the_window_is_built_before_numpy_is_imported(tmp_path):
         "import sys, modalview.ui.app as app;"
         "from PySide6.QtCore import QSettings; from modalview.ui.settings import Settings;"
         "program = app.application();"
-        "window = app.Window(Settings(QSettings(sys.argv[1], QSettings.Format.IniFormat)), app.Worker());"
+        "from modalview.ui.worker import Worker;"
+        "window = app.Window(Settings(QSettings(sys.argv[1], QSettings.Format.IniFormat)), Worker());"
         "window.show(); program.processEvents();"
         "sys.exit('numpy' in sys.modules or 'scipy' in sys.modules)"
     )
