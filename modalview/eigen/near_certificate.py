@@ -1,12 +1,18 @@
 """Counts on both sides of the modes found near a frequency: whether any between them is missing."""
 
 from collections.abc import Sequence
+from concurrent.futures import ThreadPoolExecutor
 from dataclasses import dataclass
 
 import numpy as np
 
 from modalview.factor.shifted import ShiftedPencil
 
+# An uncertainty up to this share of the gap is sharp enough: the ends stand clear of the modes beside it.
+ENOUGH = 0.1
+# With more entries in the factors than this both ends are counted at once, in two threads (factoring lets
+# the interpreter go); with more than the second number memory counts for more than time.
+WORTH_THREADS, TOO_LARGE = 15_000, 50_000_000
 # Where in the gap the edges are tried; another place only where a pivot vanishes.
 PLACES = (0.5, 0.35, 0.65)
 
@@ -95,16 +101,37 @@ def edges_in(pieces: Sequence[ShiftedPencil], asked: float, gap: tuple[float, fl
     to see.
     """
     near, far = gap
+    enough = ENOUGH * (far - near)
     for place in PLACES:
         radius = near + place * (far - near)
-        found = Edges(radius, _edge(pieces, asked - radius), _edge(pieces, asked + radius))
+        low, high = _both(pieces, asked - radius, asked + radius, enough)
+        found = Edges(radius, low, high)
         if np.isfinite(found.uncertainty):
             break
     return found
 
 
-def _edge(pieces: Sequence[ShiftedPencil], sigma: float) -> Edge:
+def _both(pieces: Sequence[ShiftedPencil], low: float, high: float, enough: float) -> list[Edge]:
+    """Count at both ends."""
+
+    def edge(sigma: float) -> Edge:
+        return _edge(pieces, sigma, enough)
+
+    entries = max(int(piece.pattern.terms.sum()) for piece in pieces)
+    if not WORTH_THREADS < entries < TOO_LARGE:
+        return [edge(low), edge(high)]
+    with ThreadPoolExecutor(1) as beside:
+        below = beside.submit(edge, low)
+        above = edge(high)
+        return [below.result(), above]
+
+
+def _edge(pieces: Sequence[ShiftedPencil], sigma: float, enough: float) -> Edge:
     if sigma <= 0 and all(piece.definite for piece in pieces):
         return Edge(sigma, (0,) * len(pieces), 0.0)
-    counts = [piece.factorize(sigma) for piece in pieces]
-    return Edge(sigma, tuple(count.negative for count in counts), max(c.uncertainty for c in counts))
+    negative, uncertainty = [], 0.0
+    for piece in pieces:
+        count = piece.factorize(sigma, enough / abs(sigma) if sigma else np.inf)
+        negative.append(count.negative)
+        uncertainty = max(uncertainty, count.uncertainty)
+    return Edge(sigma, tuple(negative), uncertainty)

@@ -2,6 +2,7 @@
 
 from collections.abc import Callable
 from dataclasses import dataclass, field
+from math import sqrt
 
 import numpy as np
 import numpy.typing as npt
@@ -19,8 +20,8 @@ FOUND = 1e-12
 FORESEEN = 1e-4
 # Dimensions between two tests of convergence, and before the rate is known.
 LEAST_STEP, MOST_STEP = 2, 8
-# Columns by which storage grows.
-GROWTH = 32
+# Columns by which storage grows: most searches need no more, and copying costs as much as ten of them.
+GROWTH = 64
 
 
 @dataclass(slots=True)
@@ -70,7 +71,7 @@ class Krylov:
     Parameters
     ----------
     operator : callable
-        y -> (S - shift)^-1 y, (modes,).
+        y -> (S - shift)^-1 y, (modes,) or (modes, k).
     shift, asked : float
         Shift of the operator, and the value that distances are measured from; rad**2/s**2.
     kept_out : array (modes, r)
@@ -111,6 +112,14 @@ class Krylov:
             self.images[: entries.size, column] = entries
             self.multiplied += 1
 
+    def fill(self) -> None:
+        """Span all that is not kept out at once: in a small model faster than vector by vector."""
+        kept = self.kept_out.shape[1]
+        whole = np.linalg.qr(self.kept_out, mode="complete")[0] if kept else np.eye(len(self.kept_out))
+        self.basis = np.asfortranarray(whole[:, kept:])
+        self.images = self.basis.T @ self.operator(self.basis)
+        self.starts = self.size = self.multiplied = self.basis.shape[1]
+
     def ritz(self, dimension: int | None = None) -> Ritz:
         """Return the Ritz approximations from the first vectors of the basis, all by default."""
         m = dimension or self.multiplied
@@ -136,14 +145,14 @@ class Krylov:
         Only basis vectors ``since`` some place can make up more than rounding of it, so these go first: one
         pass over the whole basis is then enough.
         """
-        whole = float(np.linalg.norm(vector))
+        whole = sqrt(vector @ vector)
         entries = np.zeros(self.size + 1)
         self._subtract(vector, entries, since)
-        left = float(np.linalg.norm(vector))
+        left = sqrt(vector @ vector)
         for _ in range(PASSES):
             before = left
             self._subtract(vector, entries, 0)
-            left = float(np.linalg.norm(vector))
+            left = sqrt(vector @ vector)
             if left > KEPT * before or left <= DEPENDENT * whole:
                 break
         if left <= DEPENDENT * whole:

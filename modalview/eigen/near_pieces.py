@@ -21,11 +21,18 @@ def pieces(pencil: Pencil) -> list[tuple[Indices, Pencil]]:
     One piece, the pencil itself, where all hangs together or there are more than 32 pieces. Coordinates
     without inertia that hang with nothing that has some belong to no piece.
     """
-    number, label = connected_components(abs(pencil.K) + abs(pencil.M), directed=False)
+    number, label = connected_components(_joined(pencil), directed=False)
     if number == 1 or number > MOST_PIECES:
         return [(np.arange(pencil.n), pencil)]
     parts = [np.flatnonzero(label == one) for one in range(number)]
     return [(where, _piece(pencil, where)) for where in parts if not pencil.massless[where].all()]
+
+
+def _joined(pencil: Pencil) -> sp.csc_array:
+    """Return a matrix with an entry where two coordinates are joined: stored zeros join nothing."""
+    if pencil.M.nnz == np.count_nonzero(pencil.M.diagonal()) and bool(np.all(pencil.K.data)):
+        return pencil.K
+    return sp.csc_array(abs(pencil.K) + abs(pencil.M))
 
 
 def _piece(pencil: Pencil, where: Indices) -> Pencil:

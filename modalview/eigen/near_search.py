@@ -21,6 +21,8 @@ Array = npt.NDArray[np.float64]
 
 # Largest dimension of one subspace.
 LARGEST = 200
+# Models of so few modes are inverted as a whole.
+FEW = 100
 # Starting vectors of a repeated search: one finds one of several equal modes.
 MOST_STARTS = 24
 # A shift this much nearer to one mode than to the wanted ones drowns them in its rounding...
@@ -37,6 +39,8 @@ NUDGES = (0.0, 1e-6, 1e-4, -3e-4, 1e-3, -3e-3)
 PROBE = 1e-13
 # A shift is moved so often at most.
 MOVES = 4
+# Rows orthogonalised at a time.
+BLOCK = 4096
 SEED = 20260131
 
 
@@ -143,8 +147,13 @@ class Search:
         self._moved = False
         operator = self._operator or self._factored()
         space = Krylov(operator, self._shift, self.asked, np.hstack([self.rigid, self.locked]))
-        space.start(self._random.standard_normal((self.pencil.modes, starts)))
         already, dimension = self.solves, min(2 * wanted + 6, LARGEST)
+        if self.pencil.modes <= FEW:
+            self._tick()
+            space.fill()
+            self.solves = already + space.multiplied
+        else:
+            space.start(self._random.standard_normal((self.pencil.modes, starts)))
         while True:
             space.extend(dimension, self._tick)
             ritz_ = space.ritz()
@@ -209,15 +218,8 @@ class Search:
         else:
             raise NumericalError(f"K - sigma M is singular around sigma = {self.asked:g} rad²/s².")
         self._shift = shift
-        back = np.argsort(shifted.pattern.stored)
-        weigh = sp.csr_array(sp.csr_array(pencil.M @ pencil.basis)[back])
-        gather = sp.csr_array(weigh.T)
-
-        def inverse(vector: Array) -> Array:
-            return np.asarray(gather @ lu.solve(weigh @ vector))
-
-        self._operator = inverse
-        return inverse
+        self._operator = _inverse(pencil, lu)
+        return self._operator
 
     def forget_factors(self) -> None:
         """Let go of the factorization, the most memory by far; a further search makes it anew."""
@@ -233,7 +235,7 @@ class Search:
         order = near[np.argsort(self.values[near], kind="stable")]
         vectors, pencil = self.locked[:, order], self.pencil
         if order.size and pencil.stiffness is not None and not np.any(pencil.stiffness < 0):
-            triangle = np.asarray(np.linalg.qr(pencil.factor @ vectors, mode="r"), dtype=float)
+            triangle = _triangle(pencil.factor @ vectors)
             _, turn = singular_pairs(triangle)
             vectors = vectors @ turn
         elif order.size:
@@ -241,6 +243,39 @@ class Search:
             _, turn = np.linalg.eigh(shapes.T @ (pencil.K @ shapes))
             vectors = vectors @ turn
         return np.asarray(pencil.basis @ vectors)
+
+
+def _inverse(pencil: Pencil, lu: "SuperLU[np.float64]") -> Callable[[Array], Array]:
+    """Return y -> (S - shift)^-1 y, (modes,) or (modes, k), from factors in the stored order."""
+    stored, weigh = pencil.shifted.pattern.stored, sp.csr_array(pencil.M @ pencil.basis)
+    if pencil.modes == pencil.n and weigh.nnz == np.count_nonzero(weigh.diagonal()):
+        # masses alone: a sparse product would cost more than the solve of a small model
+        root, back = weigh.diagonal(), np.argsort(stored)
+
+        def scaled(vector: Array) -> Array:
+            right = (root * vector.T).T[back]
+            return np.asarray((root * lu.solve(right)[stored].T).T)
+
+        return scaled
+    weigh = sp.csr_array(weigh[np.argsort(stored)])
+    gather = sp.csr_array(weigh.T)
+
+    def weighed(vector: Array) -> Array:
+        return np.asarray(gather @ lu.solve(weigh @ vector))
+
+    return weighed
+
+
+def _triangle(tall: Array) -> Array:
+    """Return R of tall = Q R, (t, k) to at most (k, k).
+
+    Block by block, each of which fits into the cache, then from the R of all blocks (J. Demmel, L. Grigori,
+    M. Hoemmen, J. Langou (2012), SIAM J. Sci. Comput. 34, A206): as accurate, column by column.
+    """
+    if len(tall) > BLOCK:
+        starts = range(0, len(tall), BLOCK)
+        tall = np.vstack([np.linalg.qr(tall[start : start + BLOCK], mode="r") for start in starts])
+    return np.asarray(np.linalg.qr(tall, mode="r"), dtype=float)
 
 
 def _probed(pattern: Pattern, matrix: sp.csc_array) -> "SuperLU[np.float64] | None":

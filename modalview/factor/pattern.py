@@ -15,12 +15,13 @@ Array = npt.NDArray[np.float64]
 Indices = npt.NDArray[np.intp]
 
 # Columns SuperLU updates together, and the subtree it merges into one supernode; measured best from n = 10
-# to 1e4 on chains and plane models (the library's own 20 and 10 cost a tenth to a half more).
+# to 1e4 on chains and plane models (the library's own 20 and 10 cost a tenth to a half more). Subtrees larger
+# than its own 10 are not to be tried: with 30 it wrote beside its arrays (n = 1e4, free(): invalid pointer).
 PANEL, RELAX = 4, 10
 
 # From this size on, where minimum degree leaves more entries a column in each factor than this, nested
 # dissection is tried beside it.
-LARGE, HEAVY = 30_000, 30
+LARGE, HEAVY = 8_000, 30
 
 
 @dataclass(frozen=True, slots=True, eq=False)
@@ -46,6 +47,11 @@ class Factors:
     mirror: npt.NDArray[np.int32]
     columns: npt.NDArray[np.int32]
     diagonal: Indices
+
+    def lower(self, data: Array) -> sp.csc_array:
+        """Return a matrix (n, n) of the pattern of L with these values."""
+        n = self.lower_indptr.size - 1
+        return sp.csc_array((data, self.lower_indices, self.lower_indptr), shape=(n, n))
 
     def describe(self, lu: "SuperLU[np.float64]") -> bool:
         """Return whether the factors have exactly this pattern."""

@@ -27,6 +27,9 @@ REFINEMENTS = 2
 # Asymmetry of the factors, relative, whose square over four is below the unit roundoff.
 ASYMMETRY = 2e-8
 
+# Entries of the factors looked at together: large arrays cost more to get from the system than to fill.
+BLOCK = 2**17
+
 # Entries of the scaling stay above this share of the largest.
 LEAST_SCALING = 1e-3
 
@@ -178,25 +181,29 @@ def factor_rounding(pattern: Pattern, lu: "SuperLU[np.float64]") -> tuple[Array,
 
 def _mirrored(shape: Factors, terms: Indices, lu: "SuperLU[np.float64]") -> tuple[Array, Rounding]:
     """Work on the entries alone, as U mirrors L entry by entry."""
-    upper = lu.U.data[shape.mirror]
-    pivots = upper[shape.diagonal]
-    mirror = pivots[shape.columns] * lu.L.data
-    # at least |U - D L^T| = 2 |D R^T|, its evaluation included, and at least |U| and |D L^T|
-    apart = np.abs(upper - mirror) + 2 * UNIT * np.abs(mirror)
-    size = np.abs(upper) + apart
-    starts, rows = shape.lower_indptr[:-1], shape.lower_indices
-    inverse = 1 / np.abs(pivots)
+    lower, upper = lu.L.data, lu.U.data
+    pivots = upper[shape.mirror[shape.diagonal]]
+    size, apart = np.empty(lower.size), np.empty(lower.size)
     # R is U to the asymmetry found: where that is small, |R||D||R|^T is below u |L||U|, one more rounding
-    symmetric = bool(np.all(apart <= ASYMMETRY * size))
-    share = gamma(terms + (4 if symmetric else 3))
+    symmetric = True
+    for start in range(0, lower.size, BLOCK):
+        block = slice(start, start + BLOCK)
+        above = upper[shape.mirror[block]]
+        mirror = pivots[shape.columns[block]] * lower[block]
+        # at least |U - D L^T| = 2 |D R^T|, its evaluation included, and at least |U| and |D L^T|
+        off = np.abs(above - mirror) + 2 * UNIT * np.abs(mirror)
+        apart[block] = off
+        size[block] = np.abs(above) + off
+        symmetric = symmetric and bool(np.all(off <= ASYMMETRY * size[block]))
+    share, inverse = gamma(terms + (4 if symmetric else 3)), 1 / np.abs(pivots)
+    sizes = shape.lower(size)
+    skews = None if symmetric else shape.lower(apart)
 
     def times(vector: Array) -> Array:
-        grown = np.add.reduceat(size * (share * vector)[rows], starts) * inverse
-        entries = size * grown[shape.columns]
-        if not symmetric:
-            skew = np.add.reduceat(apart * vector[rows], starts) * (0.25 * inverse)
-            entries = entries + apart * skew[shape.columns]
-        return np.bincount(rows, entries, vector.size).astype(float, copy=False)
+        rounding = np.asarray(sizes @ (((share * vector) @ sizes) * inverse), dtype=float)
+        if skews is not None:
+            rounding += skews @ ((vector @ skews) * (0.25 * inverse))
+        return rounding
 
     return pivots, times
 

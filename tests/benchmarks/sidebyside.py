@@ -9,14 +9,16 @@ from typing import Any
 
 @dataclass(frozen=True, slots=True)
 class Pair:
-    """Medians in seconds, and the median of the ratios pair by pair."""
+    """Medians in seconds, the median of the ratios pair by pair, and the ratio of the shortest times."""
 
     first: float
     second: float
     ratio: float
+    quietest: float
 
     def __str__(self) -> str:
-        return f"{1e3 * self.first:9.2f} ms  {1e3 * self.second:9.2f} ms  ratio {self.ratio:.2f}"
+        times = f"{1e3 * self.first:9.2f} ms  {1e3 * self.second:9.2f} ms"
+        return f"{times}  ratio {self.ratio:.2f} (quietest {self.quietest:.2f})"
 
 
 def in_turn(first: Callable[[], Any], second: Callable[[], Any], rounds: int = 15) -> Pair:
@@ -24,7 +26,8 @@ def in_turn(first: Callable[[], Any], second: Callable[[], Any], rounds: int = 1
     first()
     second()
     pairs = [(_seconds(first), _seconds(second)) for _ in range(rounds)]
-    return Pair(median(a for a, _ in pairs), median(b for _, b in pairs), median(a / b for a, b in pairs))
+    own, others = zip(*pairs, strict=True)
+    return Pair(median(own), median(others), median(a / b for a, b in pairs), min(own) / min(others))
 
 
 def _seconds(run: Callable[[], Any]) -> float:
