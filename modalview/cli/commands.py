@@ -1,7 +1,6 @@
 """The commands: each reads its words, asks the study, and prints text or JSON."""
 
 import argparse
-import sys
 from collections.abc import Callable
 from pathlib import Path
 
@@ -10,12 +9,12 @@ from modalview.cli.damped import damped_document, damped_text
 from modalview.cli.printing import (
     OK,
     UNUSABLE,
+    complain,
     failure_text,
     one_line,
     progress,
     say,
     say_json,
-    shown,
     verdict_code,
 )
 from modalview.errors import KeepclearError, UsageError
@@ -35,6 +34,14 @@ def _file(words: argparse.Namespace) -> tuple[Path, Model]:
 
 def _solved(model: Model, *, exact: bool = False) -> Solution:
     return solve(Request(model, progress=progress, exact=exact))
+
+
+def whole(text: str) -> int:
+    """Return a whole number typed on the command line."""
+    try:
+        return int(text)
+    except ValueError:
+        raise argparse.ArgumentTypeError(f"wants a whole number, such as 2; found {text!r}") from None
 
 
 def _prepare_file(parser: argparse.ArgumentParser) -> None:
@@ -62,7 +69,7 @@ def run_bounds(words: argparse.Namespace) -> int:
 def _prepare_modes(parser: argparse.ArgumentParser) -> None:
     _prepare_file(parser)
     parser.add_argument("--near", metavar='"1480 rpm"', help="only the modes nearest to this frequency")
-    parser.add_argument("--count", type=int, metavar="6", help="how many of them (default: 6)")
+    parser.add_argument("--count", type=whole, metavar="6", help="how many of them (default: 6)")
     parser.add_argument("--history", action="store_true", help="with --near: how the residuals fell")
     matrices.add_words(parser)
     parser.set_defaults(run=matrices.either(run_modes, matrices.run_modes))
@@ -108,7 +115,7 @@ def run_check(words: argparse.Namespace) -> int:
                 raise
             found.append({"file": str(path), "error": str(error)})
             codes.append(UNUSABLE)
-            sys.stderr.write(f"keepclear: {shown(failure_text(error, path))}\n")
+            complain(failure_text(error, path))
         if not words.json and path is not words.files[-1]:
             say("")
     if words.json:
@@ -120,7 +127,7 @@ def _prepare_picture(parser: argparse.ArgumentParser) -> None:
     parser.add_argument("file", type=Path, metavar="FILE", help="a .keepclear file")
     parser.add_argument("-o", "--output", type=Path, required=True, metavar="OUT.png", help="where it goes")
     parser.add_argument("--of", choices=PICTURES, default="sheet", help="what it shows (default: sheet)")
-    parser.add_argument("--mode", type=int, metavar="N", help="the mode shown, from 1 (with --of mode)")
+    parser.add_argument("--mode", type=whole, metavar="N", help="the mode shown, from 1 (with --of mode)")
     parser.add_argument("--size", default="2400x1600", metavar="WxH", help="in pixels (default: 2400x1600)")
     parser.add_argument("--dark", action="store_true", help="dark colours")
     parser.set_defaults(run=run_picture)

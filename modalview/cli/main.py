@@ -7,13 +7,14 @@ import os
 import sys
 from collections.abc import Sequence
 from contextlib import suppress
+from difflib import get_close_matches
 from pathlib import Path
-from typing import NoReturn, TextIO
+from typing import Any, NoReturn, TextIO
 
 from modalview import __version__
 from modalview.cli.cautions import CAUTION
 from modalview.cli.commands import COMMANDS
-from modalview.cli.printing import UNUSABLE, failure_text, one_line, shown
+from modalview.cli.printing import UNUSABLE, complain, failure_text, one_line, shown
 from modalview.errors import FaultsError, KeepclearError
 
 _DESCRIPTION = (
@@ -63,8 +64,7 @@ def _flushed(code: int) -> int:
 
 def _complain(message: str) -> None:
     try:
-        sys.stderr.write(f"keepclear: {shown(message)}\n")
-        sys.stderr.flush()
+        complain(message)
     except OSError:  # nobody can be told; the exit code still is
         _forget(sys.stderr)
 
@@ -93,10 +93,27 @@ def _forget(stream: TextIO) -> None:
 
 
 class _Parser(argparse.ArgumentParser):
-    """Exits with 2 and one line, as every other unusable input."""
+    """Exits with 2 and one line, as every other unusable input; options are written in full."""
+
+    def __init__(self, **settings: Any) -> None:
+        super().__init__(**settings, allow_abbrev=False)
 
     def error(self, message: str) -> NoReturn:
         self.exit(UNUSABLE, f"keepclear: {shown(one_line(message))}; see {self.prog} --help\n")
+
+    def parse_known_args(self, args: Any = None, namespace: Any = None) -> Any:
+        """Refuse words that are left over where the command is known, not at the top."""
+        words, left = super().parse_known_args(args, namespace)
+        if left:
+            self.error(self._left_over(left[0]))
+        return words, left
+
+    def _left_over(self, word: str) -> str:
+        if not word.startswith("-"):
+            return f"{word!r} is one word too many"
+        options = [name for name in self._option_string_actions if name.startswith("--")]
+        close = get_close_matches(word.partition("=")[0], options, n=1)
+        return f"there is no option {word}" + (f" (did you mean {close[0]}?)" if close else "")
 
 
 def _parser() -> argparse.ArgumentParser:

@@ -2,7 +2,9 @@
 
 import json
 import re
+import shutil
 import sys
+from dataclasses import dataclass
 from pathlib import Path
 from typing import Any
 
@@ -45,6 +47,7 @@ def one_line(text: str) -> str:
 
 def say(text: str) -> None:
     """Print text and one newline."""
+    clear_progress()
     sys.stdout.write(shown(text.rstrip("\n")) + "\n")
 
 
@@ -53,10 +56,37 @@ def say_json(document: Any) -> None:
     say(json.dumps(document, indent=2, ensure_ascii=False, allow_nan=False))
 
 
+def complain(message: str) -> None:
+    """Print a failure on the error stream."""
+    clear_progress()
+    sys.stderr.write(f"keepclear: {shown(message)}\n")
+    sys.stderr.flush()
+
+
 def progress(what: str, share: float) -> None:
-    """Tell how far long work is, on a screen only."""
-    if sys.stderr.isatty():
-        sys.stderr.write(f"\r{100 * share:3.0f} %  {what:<40.40}")
-        if share >= 1:
-            sys.stderr.write("\r" + " " * 48 + "\r")
+    """Tell how far long work is, on a screen only; the line goes before anything else is printed."""
+    if sys.stderr is None or not sys.stderr.isatty():
+        return
+    room = shutil.get_terminal_size().columns - 1  # a full line would scroll
+    line = f"{100 * share:3.0f} %  {what}"[:room]
+    sys.stderr.write("\r" + line.ljust(min(_progress_line.width, room)))
+    sys.stderr.flush()
+    _progress_line.width = len(line)
+
+
+def clear_progress() -> None:
+    """Take away the line that ``progress`` left."""
+    if _progress_line.width:
+        sys.stderr.write("\r" + " " * _progress_line.width + "\r")
         sys.stderr.flush()
+        _progress_line.width = 0
+
+
+@dataclass(slots=True)
+class _ProgressLine:
+    """What stands on the line of the cursor: of the process, as its screen is."""
+
+    width: int = 0
+
+
+_progress_line = _ProgressLine()
