@@ -17,9 +17,8 @@ class _Screen(io.StringIO):
         return True
 
 
-@pytest.fixture
-def screen(monkeypatch):
-    """Return one screen that both streams write on."""
+def screen_of(monkeypatch):
+    """Return one screen that both streams write on; called within a test, whose streams are others."""
     made = _Screen()
     monkeypatch.setattr(sys, "stderr", made)
     monkeypatch.setattr(sys, "stdout", made)
@@ -39,7 +38,8 @@ def seen(text):
 
 
 @pytest.mark.parametrize("words", [["check"], ["modes"]])
-def test_nothing_of_progress_is_left_on_the_screen(screen, monkeypatch, words):
+def test_nothing_of_progress_is_left_on_the_screen(monkeypatch, words):
+    screen = screen_of(monkeypatch)
     main([*words, str(PUMP)])
     with_progress = seen(screen.getvalue())
     assert "%  nominal" in screen.getvalue()
@@ -50,13 +50,15 @@ def test_nothing_of_progress_is_left_on_the_screen(screen, monkeypatch, words):
     assert seen(screen.getvalue()) == with_progress
 
 
-def test_a_failure_after_progress_stands_alone(screen):
+def test_a_failure_after_progress_stands_alone(monkeypatch):
+    screen = screen_of(monkeypatch)
     printing.progress("a step", 0.5)
     printing.complain("it went wrong")
     assert seen(screen.getvalue()) == ["keepclear: it went wrong", ""]
 
 
-def test_progress_never_fills_a_line_of_a_narrow_screen(screen):
+def test_progress_never_fills_a_line_of_a_narrow_screen(monkeypatch):
+    screen = screen_of(monkeypatch)
     printing.progress("a step with many words in its name", 0.5)
     printing.progress("short", 0.6)
     printing.clear_progress()
