@@ -5,14 +5,25 @@ from dataclasses import dataclass
 from typing import Any
 
 from PySide6.QtCore import QPointF, QRectF, QSize, Qt, QTimer, Signal
-from PySide6.QtGui import QColor, QIcon, QPainter, QPixmap, QPolygonF, QResizeEvent
-from PySide6.QtWidgets import QFrame, QHBoxLayout, QLabel, QSizePolicy, QSlider, QToolButton, QWidget
+from PySide6.QtGui import QColor, QFontMetrics, QIcon, QPainter, QPixmap, QPolygonF, QResizeEvent
+from PySide6.QtWidgets import (
+    QApplication,
+    QBoxLayout,
+    QFrame,
+    QHBoxLayout,
+    QLabel,
+    QSizePolicy,
+    QSlider,
+    QToolButton,
+    QWidget,
+)
 
 from modalview.ui.modelist import frequency_text
 from modalview.ui.swing import FULL_TURN, Swing
 from modalview.ui.theme import LIGHT, Theme
 
-_ICON_PX = 16
+_ICON = 1.15  # times the height of a line of text
+_LEAST_SLIDER, _MOST_SLIDER, _GAP = 4.0, 8.0, 8  # heights of a line; pixels
 # The phase shown while the mode moves need not follow every frame.
 _FOLLOW_MS = 120
 # Steps of the speed slider that double the speed.
@@ -45,7 +56,7 @@ def speed_of(step: int) -> float:
 
 
 class PlayBar(QFrame):
-    """Shown while a mode is chosen; in little room captions go first, then the sliders from the left."""
+    """Shown while a mode is chosen; in little room captions go above their sliders, then sliders go."""
 
     moving_changed = Signal(bool)
     speed_changed = Signal(int)  # steps
@@ -60,16 +71,16 @@ class PlayBar(QFrame):
         self._there = False
         self.pause = QToolButton(self)
         self.pause.setCheckable(True)
-        self.pause.setIconSize(QSize(_ICON_PX, _ICON_PX))
         self.pause.toggled.connect(self._on_toggled)
         self.name = QLabel(self)
         self.name.setSizePolicy(QSizePolicy.Policy.Minimum, QSizePolicy.Policy.Preferred)
         self._layout = QHBoxLayout(self)
         self._layout.setContentsMargins(8, 3, 14, 3)
+        self._layout.setSizeConstraint(QHBoxLayout.SizeConstraint.SetNoConstraint)
         self._layout.setSpacing(8)
         for widget in (self.pause, self.name):
             self._add(widget)
-        self._captions: list[QLabel] = []
+        self._controls: list[_Sliding] = []
         self.speed, self.phase, self.amplitude = (self._slider(one) for one in (SPEED, PHASE, AMPLITUDE))
         self._layout.addStretch(1)
         self.speed.valueChanged.connect(self.speed_changed)
@@ -89,20 +100,10 @@ class PlayBar(QFrame):
         self._layout.addWidget(widget)
 
     def _slider(self, control: Control) -> QSlider:
-        slider = QSlider(Qt.Orientation.Horizontal, self)
-        slider.setRange(control.low, control.high)
-        slider.setPageStep(control.page)
-        slider.setMinimumWidth(56)
-        slider.setMaximumWidth(110)
-        slider.setAccessibleName(control.spoken)
-        slider.setToolTip(control.spoken)
-        caption = QLabel(control.caption, self)
-        caption.setProperty("role", "small")
-        caption.setBuddy(slider)
-        self._captions.append(caption)
-        self._add(caption)
-        self._add(slider)
-        return slider
+        sliding = _Sliding(control, self)
+        self._controls.append(sliding)
+        self._add(sliding)
+        return sliding.slider
 
     @property
     def moving(self) -> bool:
@@ -118,6 +119,7 @@ class PlayBar(QFrame):
         """Redraw the button."""
         self._theme = theme
         self._show_state()
+        self._fit()
 
     def show_mode(self, mode: Any, *, current: bool) -> None:
         """Name the mode that moves."""
@@ -134,22 +136,27 @@ class PlayBar(QFrame):
         self.phase.setValue(round(math.degrees(self._swing.phase)) % 360)
         self.phase.blockSignals(quiet)
 
+    def minimumSizeHint(self) -> QSize:  # noqa: N802  (Qt's name)
+        """Return no width: what has no room is left out."""
+        return QSize(0, super().minimumSizeHint().height())
+
     def resizeEvent(self, event: QResizeEvent) -> None:  # noqa: N802  (Qt's name)
         """Leave out what has no room."""
         super().resizeEvent(event)
         self._fit()
 
     def _fit(self) -> None:
-        sliders = (self.speed, self.phase, self.amplitude)
-        fixed = self.pause.sizeHint().width() + self.name.sizeHint().width() + 40
-        captions = sum(one.sizeHint().width() + 8 for one in self._captions)
-        with_words = self.width() >= fixed + captions + len(sliders) * 64
-        count = max(0, min(len(sliders), (self.width() - fixed) // 64))
-        for number, (slider, caption) in enumerate(zip(sliders, self._captions, strict=True)):
-            # Of few, the phase stays longest: the other two are set once.
-            rank = (1, 0, 2)[number]
-            slider.setVisible(self._there and rank < count)
-            caption.setVisible(self._there and with_words)
+        margins = self._layout.contentsMargins()
+        room = self.width() - margins.left() - margins.right() - 2 * _GAP
+        room -= self.pause.sizeHint().width() + self.name.sizeHint().width()
+        beside = sum(one.least_width(above=False) + _GAP for one in self._controls) <= room
+        # Of few, the phase stays longest: the other two are set once.
+        kept = sorted(self._controls, key=lambda one: _RANKS[one.control])
+        while kept and not beside and sum(one.least_width(above=True) + _GAP for one in kept) > room:
+            kept.pop()
+        for one in self._controls:
+            one.put_caption(above=not beside)
+            one.setVisible(self._there and one in kept)
         self.pause.setVisible(self._there)
         self.name.setVisible(self._there)
 
@@ -182,15 +189,57 @@ class PlayBar(QFrame):
         word = "Pause the mode" if self.moving else "Let the mode move"
         self.pause.setToolTip(word)
         self.pause.setAccessibleName(word)
-        self.pause.setIcon(_icon(self._theme.ink, bars=self.moving))
+        size = round(_ICON * QFontMetrics(QApplication.font()).height())
+        self.pause.setIconSize(QSize(size, size))
+        self.pause.setIcon(_icon(self._theme.ink, size, bars=self.moving))
 
 
-def _icon(colour: str, *, bars: bool) -> QIcon:
+class _Sliding(QWidget):
+    """A slider with its caption beside it, or above it where there is little room."""
+
+    def __init__(self, control: Control, parent: QWidget) -> None:
+        super().__init__(parent)
+        self.control = control
+        self.slider = QSlider(Qt.Orientation.Horizontal, self)
+        self.slider.setRange(control.low, control.high)
+        self.slider.setPageStep(control.page)
+        self.slider.setAccessibleName(control.spoken)
+        self.slider.setToolTip(control.spoken)
+        self.caption = QLabel(control.caption, self)
+        self.caption.setProperty("role", "small")
+        self.caption.setBuddy(self.slider)
+        self._layout = QBoxLayout(QBoxLayout.Direction.LeftToRight, self)
+        self._layout.setContentsMargins(0, 0, 0, 0)
+        for widget in (self.caption, self.slider):
+            self._layout.addWidget(widget)
+        self.put_caption(above=False)
+
+    def put_caption(self, *, above: bool) -> None:
+        """Put the caption above the slider or beside it; a slider is as long as its text is large."""
+        directions = QBoxLayout.Direction
+        self._layout.setDirection(directions.TopToBottom if above else directions.LeftToRight)
+        self._layout.setSpacing(0 if above else _GAP)
+        line = QFontMetrics(QApplication.font()).height()
+        self.slider.setMinimumSize(round(_LEAST_SLIDER * line), line)
+        self.slider.setMaximumWidth(round(_MOST_SLIDER * line))
+
+    def least_width(self, *, above: bool) -> int:
+        """Return the pixels it needs with the caption above or beside."""
+        slider = round(_LEAST_SLIDER * QFontMetrics(QApplication.font()).height())
+        caption = self.caption.sizeHint().width()
+        return max(caption, slider) if above else caption + _GAP + slider
+
+
+_RANKS = {PHASE: 0, SPEED: 1, AMPLITUDE: 2}  # which sliders stay longest
+
+
+def _icon(colour: str, size: int, *, bars: bool) -> QIcon:
     """Return two bars (pause) or a triangle (go on), drawn so that no font need have them."""
-    pixmap = QPixmap(2 * _ICON_PX, 2 * _ICON_PX)
+    pixmap = QPixmap(2 * size, 2 * size)
     pixmap.setDevicePixelRatio(2)
     pixmap.fill(Qt.GlobalColor.transparent)
     painter = QPainter(pixmap)
+    painter.scale(size / 16, size / 16)
     painter.setRenderHint(QPainter.RenderHint.Antialiasing)
     painter.setPen(Qt.PenStyle.NoPen)
     painter.setBrush(QColor(colour))

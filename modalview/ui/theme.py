@@ -11,6 +11,8 @@ from modalview.places import resources
 
 # Text sizes offered in the View menu, in per cent of the system's own.
 TEXT_PERCENTS = (100, 125, 150, 175, 200)
+_PX_PER_PT = 4 / 3
+_SIZES = ("text", "small", "heading", "verdict", "sentence", "knob", "knob_half", "knob_out", "box")
 
 
 @dataclass(frozen=True, slots=True)
@@ -97,6 +99,9 @@ def style_sheet(theme: Theme, point_size: float) -> str:
         "verdict": f"{1.3 * point_size:.1f}pt",
         "sentence": f"{1.1 * point_size:.1f}pt",
     }
+    knob, box = (2 * round(share * point_size * _PX_PER_PT / 2) for share in (1.0, 0.95))
+    sizes |= {"knob": f"{knob}px", "knob_half": f"{knob // 2}px", "knob_out": f"{1 - knob // 2}px"}
+    sizes |= {"box": f"{box}px"}
     tick = (resources() / f"tick-{theme.name}.svg").as_posix()
     return template.substitute(asdict(theme), tick=tick, **sizes)
 
@@ -129,7 +134,7 @@ def palette(theme: Theme) -> QPalette:
 
 def token_names() -> tuple[str, ...]:
     """Return the names a style sheet may use."""
-    return (*(one.name for one in fields(Theme)), "text", "small", "heading", "verdict", "sentence", "tick")
+    return (*(one.name for one in fields(Theme)), *_SIZES, "tick")
 
 
 def apply_theme(application: QApplication, choice: str, text_percent: int) -> Theme:
