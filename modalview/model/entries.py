@@ -14,6 +14,7 @@ from modalview.model.parts import Point
 from modalview.model.values import SMALLEST, Entry
 from modalview.units.parse import read, unit_of
 from modalview.units.quantities import LENGTH
+from modalview.units.show import short
 from modalview.units.table import find_unit
 
 # A double holds every decimal of so many digits.
@@ -104,4 +105,4 @@ def _in_unit(exact: Decimal, spelling: str, most: int) -> Entry | None:
 def _written(number: Decimal) -> str:
     """Write a number without an exponent where that is short, and without zeros at the end."""
     plain = format(number.normalize(), "f") if number else "0"
-    return plain if len(plain) <= DIGITS + 3 else format(number.normalize(), "e")
+    return plain if len(plain) <= DIGITS + 3 else short(float(number), DIGITS)
