@@ -1,6 +1,7 @@
 """Doubts about moments of inertia: missing, of another size than the body, GD2, reflected already."""
 
 import math
+from collections import Counter
 from collections.abc import Iterator
 
 from modalview.advice.doubt import Doubt, named
@@ -157,7 +158,10 @@ def _gd2_doubt(body: Body, inertia: Value, expected: float, than: str) -> Doubt:
 
 
 def reflected(survey: Survey) -> Iterator[Doubt]:
-    """Yield gears whose faster side holds inertias that look as if seen through the gear already."""
+    """Yield gears whose faster side holds inertias that look as if seen through the gear already.
+
+    Where a shaft meets several gears nothing is said: what it carries is not on it alone.
+    """
     if survey.motion is not Motion.SHAFT_TRAIN:
         return
     gears = [link for link in survey.model.links if isinstance(link, Gear)]
@@ -171,8 +175,10 @@ def reflected(survey: Survey) -> Iterator[Doubt]:
     for body in survey.model.bodies:
         inertia = _largest(body) or 0.0
         total[shafts.find(body.id)] = total.get(shafts.find(body.id), 0.0) + inertia
+    at = Counter(shafts.find(end.body) for gear in gears for end in (gear.from_, gear.to) if end.body)
     for gear in gears:
-        yield from _reflected_at(survey, gear, shafts, total)
+        if all(end.body and at[shafts.find(end.body)] == 1 for end in (gear.from_, gear.to)):
+            yield from _reflected_at(survey, gear, shafts, total)
 
 
 def _reflected_at(

@@ -7,7 +7,7 @@ from modalview.advice.doubt import Doubt, named, plain
 from modalview.advice.survey import GROUND, Survey, carries, turns
 from modalview.assembly.directions import axes_vectors, direction_vector, length
 from modalview.assembly.groups import Groups
-from modalview.assembly.kinematics import Vector, dot, minus
+from modalview.assembly.kinematics import TRANSLATIONS, Vector, dot, minus
 from modalview.assembly.stretch import acting_point
 from modalview.model.parts import Beam, Damper, Link, Motion, Mount, RigidLink, Shaft, Spring
 from modalview.units import quantities as q
@@ -50,7 +50,8 @@ def same_place(survey: Survey) -> Iterator[Doubt]:
 def across_its_ends(survey: Survey) -> Iterator[Doubt]:
     """Yield springs and dashpots with a direction nearly square to the line of their ends.
 
-    Not where another link of the same two parts acts along that line: then it is the lateral one of a pair.
+    Not where another link of the same two parts acts along that line, as then it is the lateral one of a
+    pair, nor where the ends cannot move along it, as the floors of a building that only sway.
     """
     if survey.motion not in (Motion.PLANE, Motion.SPACE):
         return
@@ -61,13 +62,23 @@ def across_its_ends(survey: Survey) -> Iterator[Doubt]:
         line = minus(places.point(link.to), places.point(link.from_))
         direction = direction_vector(link.direction, places)
         cosine = _cosine(line, direction)
-        if cosine is None or cosine >= ACROSS or _has_partner_along(survey, link, line):
+        if cosine is None or cosine >= ACROSS or not _moves_along(survey, link, line):
+            continue
+        if _has_partner_along(survey, link, line):
             continue
         said = link.direction if isinstance(link.direction, str) else list(link.direction)
         off = math.degrees(math.acos(cosine))
         text = f"{named(link)} acts along {said}, {off:.0f} deg off the line of its ends; is that meant?"
         effect = "It resists motion across its ends only, and nothing along them."
         yield Doubt("direction across", (link.id,), text, effect)
+
+
+def _moves_along(survey: Survey, link: Spring | Damper, line: Vector) -> bool:
+    """Tell whether an end is on a body that is free along the line, other than by turning."""
+    size = length(line)
+    along = [name for name, part in zip(TRANSLATIONS, line, strict=True) if abs(float(part)) > ACROSS * size]
+    bodies = [survey.bodies[end.body] for end in (link.from_, link.to) if end.body is not None]
+    return any(body.dof is None or any(name in body.dof for name in along) for body in bodies)
 
 
 def _has_partner_along(survey: Survey, link: Spring | Damper, line: Vector) -> bool:

@@ -6,7 +6,7 @@ from dataclasses import dataclass
 from operator import attrgetter
 from typing import NamedTuple
 
-from modalview.advice.doubt import Doubt, named, plain
+from modalview.advice.doubt import Doubt, listed, named, plain
 from modalview.advice.survey import Survey
 from modalview.model.parts import Beam, Body, Damper, Gear, InertiaTensor, Link, Motion, Mount, Shaft, Spring
 from modalview.model.values import STARTING, Value
@@ -44,9 +44,12 @@ _HEAVY = "It hardly moves, almost like ground, and the lowest modes lie low."
 _LIGHT = "Its own mode may lie far above all others, or far off where it should be."
 _DAMPED = "It locks or hardly damps: the damped modes hang on it, the verdict does not."
 SPRINGS = Kind("springs", q.STIFFNESS, _RIGID, _ABSENT)
-TORSION = Kind("torsional springs", q.TORSIONAL_STIFFNESS, _RIGID, _ABSENT)
+SHAFTS = Kind("shafts", q.TORSIONAL_STIFFNESS, _RIGID, _ABSENT)
+TURNING = Kind("turning stiffnesses of mounts", q.TORSIONAL_STIFFNESS, _RIGID, _ABSENT)
 MASSES = Kind("masses", q.MASS, _HEAVY, _LIGHT)
 INERTIAS = Kind("moments of inertia", q.INERTIA, _HEAVY, _LIGHT)
+# Of bodies with mass the inertia for that mass is compared: it grows with mass and with size squared.
+GYRATION = Kind("moments of inertia by mass", q.INERTIA, _HEAVY, _LIGHT)
 DASHPOTS = Kind("dashpots", q.DAMPING, _DAMPED, _DAMPED)
 TURN_DASHPOTS = Kind("torsional dashpots", q.TORSIONAL_DAMPING, _DAMPED, _DAMPED)
 _BEAMS = {
@@ -63,17 +66,18 @@ _BEAMS = {
 }
 _MOUNT = ("x", "y", "z", "rx", "ry", "rz")
 _of_all = attrgetter(*_MOUNT)
-_MOUNT_STIFFNESS = tuple((f"stiffness {key}", TORSION if "r" in key else SPRINGS) for key in _MOUNT)
+_MOUNT_STIFFNESS = tuple((f"stiffness {key}", TURNING if "r" in key else SPRINGS) for key in _MOUNT)
 _MOUNT_DAMPING = tuple((f"damping {key}", TURN_DASHPOTS if "r" in key else DASHPOTS) for key in _MOUNT)
 
 
 class Typed(NamedTuple):
-    """One value of a part, and what it is there: "mass", "stiffness z"."""
+    """One value of a part, what it is there ("mass", "stiffness z"), and what it is compared by."""
 
     kind: Kind
     part: Body | Link
     what: str
     value: Value
+    per: float = 1.0
 
 
 def typed_values(survey: Survey) -> Iterator[Typed]:
@@ -81,11 +85,13 @@ def typed_values(survey: Survey) -> Iterator[Typed]:
     for body in survey.model.bodies:
         if body.mass is not None:
             yield Typed(MASSES, body, "mass", body.mass)
+        mass = body.mass.si if body.mass is not None else 0.0
+        kind, per = (GYRATION, mass) if mass > 0 else (INERTIAS, 1.0)
         if isinstance(body.inertia, InertiaTensor):
             for key in ("Ixx", "Iyy", "Izz"):
-                yield Typed(INERTIAS, body, key, getattr(body.inertia, key))
+                yield Typed(kind, body, key, getattr(body.inertia, key), per)
         elif body.inertia is not None:
-            yield Typed(INERTIAS, body, "inertia", body.inertia)
+            yield Typed(kind, body, "inertia", body.inertia, per)
     for link in survey.model.links:
         yield from _of_link(link, survey.motion)
 
@@ -94,7 +100,7 @@ def _of_link(link: Link, motion: Motion) -> Iterator[Typed]:
     if isinstance(link, Spring):
         yield Typed(SPRINGS, link, "stiffness", link.stiffness)
     elif isinstance(link, Shaft):
-        yield Typed(TORSION, link, "stiffness", link.stiffness)
+        yield Typed(SHAFTS, link, "stiffness", link.stiffness)
     elif isinstance(link, Damper):
         turning = motion is Motion.SHAFT_TRAIN
         yield Typed(TURN_DASHPOTS if turning else DASHPOTS, link, "damping", link.damping)
@@ -129,12 +135,12 @@ def far_off(values: list[Typed]) -> Iterator[Doubt]:
             sizes = sorted(map(_size, group))
             for one in group:
                 middle = _median_without(sizes, _size(one))
-                if not middle / FAR <= one.value.si <= middle * FAR:
+                if not middle / FAR <= _size(one) <= middle * FAR:
                     yield _far(one, middle, len(group) - 1)
 
 
 def _size(one: Typed) -> float:
-    return one.value.si
+    return one.value.si / one.per
 
 
 def _median_without(ordered: list[float], one: float) -> float:
@@ -150,18 +156,18 @@ def _median_without(ordered: list[float], one: float) -> float:
 
 
 def _far(one: Typed, middle: float, others: int) -> Doubt:
-    large = one.value.si > middle
-    times = one.value.si / middle if large else middle / one.value.si
+    large = _size(one) > middle
+    times = _size(one) / middle if large else middle / _size(one)
     share = f"{_round(times)} times" if large else f"1/{_round(times)} of"
     text = (
         f"{named(one.part)}: {one.what} {one.value.text} is {share} the median of the other {others} "
-        f"{one.kind.many}, {show(middle, one.kind.quantity)}; a power of ten?"
+        f"{one.kind.many}, {show(middle * one.per, one.kind.quantity)}; a power of ten?"
     )
     return Doubt("value far off", (one.part.id,), text, one.kind.large if large else one.kind.small)
 
 
 def _far_apart(small: Typed, large: Typed) -> Iterator[Doubt]:
-    times = large.value.si / small.value.si
+    times = _size(large) / _size(small)
     if times > FAR:
         text = (
             f"{named(large.part)}: {large.what} {large.value.text} is {_round(times)} times that of "
@@ -182,7 +188,7 @@ def never_typed(values: list[Typed]) -> Iterator[Doubt]:
         if one.value.source == STARTING:
             found.setdefault(one.part.id, []).append(one)
     for part, group in found.items():
-        told = " and ".join(f"{one.what} {one.value.text}" for one in group)
+        told = listed([f"{one.what} {one.value.text}" for one in group])
         verb, nobody = ("is a starting value", "it") if len(group) == 1 else ("are starting values", "them")
         yield Doubt(
             "starting value",

@@ -11,6 +11,7 @@ from modalview.advice.drawn import doubts
 from modalview.assembly.assemble import assemble
 from modalview.bounds.before import before_solve
 from modalview.errors import ModelFaultsError
+from modalview.model.templates import TEMPLATES, build
 from modalview.places import demo_models
 from modalview.store import read_model
 
@@ -29,6 +30,14 @@ def test_a_model_that_cannot_be_assembled_still_has_its_doubts(model):
     with pytest.raises(ModelFaultsError):
         assemble(floating)
     assert [one.rule for one in doubts(floating)] == ["floating part", "lone junction"]
+
+
+@pytest.mark.parametrize("template", TEMPLATES, ids=lambda template: template.id)
+def test_a_starting_point_is_doubted_for_its_starting_values_alone(template):
+    model = build(template, {})
+    assembly = assemble(model)
+    found = (*doubts(model), *doubts_of(assembly, before_solve(assembly.pencil())))
+    assert {one.rule for one in found} == {"starting value"}
 
 
 def test_an_empty_model_has_none(model):

@@ -123,3 +123,17 @@ def test_a_small_fast_motor_on_a_slow_load_is_not_doubted(told):
     bodies = [{"id": "motor", "inertia": "0.1 kg m2"}, {"id": "mill", "inertia": "20 kg m2"}]
     gear = {"id": "g", "kind": "gear", "from": {"body": "motor"}, "to": {"body": "mill"}, "ratio": "-1/50"}
     assert not told("reflected inertia", "shaft train", bodies=bodies, links=[gear])
+
+
+def test_a_shaft_between_two_gears_is_not_judged(told):
+    given = train("28.2 kg m2")
+    given["bodies"].append({"id": "last", "inertia": "1 kg m2"})
+    further = {
+        "id": "second",
+        "kind": "gear",
+        "from": {"body": "comp"},
+        "to": {"body": "last"},
+        "ratio": "-2",
+    }
+    given["links"].append(further)
+    assert not told("reflected inertia", "shaft train", **given)

@@ -46,6 +46,12 @@ def test_the_lateral_spring_of_a_pair_is_meant(told):
     assert not told("direction across", bodies=[body()], supports=[G], links=pair)
 
 
+def test_a_floor_that_only_sways_is_held_across_the_line_to_the_one_below(told):
+    sideways = spring("k", {"body": "a"}, {"support": "g"}, direction="x")
+    assert not told("direction across", bodies=[body(dof=["x"])], supports=[G], links=[sideways])
+    assert told("direction across", bodies=[body(dof=["x", "y"])], supports=[G], links=[sideways])
+
+
 def on_two(left, right, **more):
     feet = [{"id": name, "position": [x, "0 m"]} for name, x in (("l", left), ("r", right))]
     links = [

@@ -99,3 +99,29 @@ def test_parts_as_the_program_draws_them_raise_no_other_doubt_than_their_startin
     ]
     assert "mass 100 kg and inertia" in found[0].text
     assert "are starting values; nobody has given them yet" in found[0].text
+
+
+@pytest.mark.parametrize(("inertia", "fires"), [("640 kg m2", False), ("0.02 kg m2", True)])
+def test_inertias_of_bodies_with_mass_are_compared_for_their_mass(told, inertia, fires):
+    # 2 kg and 0.01 kg m2, 20 kg and 0.4 kg m2: small bodies are no sign that a large one is mistyped.
+    given = [("2 kg", "0.01 kg m2"), ("20 kg", "0.4 kg m2"), ("3200 kg", inertia)]
+    bodies = [
+        {"id": f"m{i}", "mass": mass, "inertia": own, "position": [f"{i} m", "1 m"]}
+        for i, (mass, own) in enumerate(given)
+    ]
+    links = [
+        {
+            "id": f"k{i}",
+            "kind": "spring",
+            "from": {"body": f"m{i}"},
+            "to": {"support": "g"},
+            "stiffness": "1e6 N/m",
+        }
+        for i in range(3)
+    ]
+    found = [
+        one
+        for one in told("value far off", bodies=bodies, supports=[G], links=links)
+        if "inertia" in one.text
+    ]
+    assert [one.parts for one in found] == ([("m2",)] if fires else [])
