@@ -30,7 +30,7 @@ def add_machine(
     name : str
         May be empty.
     speed : str
-        "2950 rpm" or "600 to 1800 rpm", by the window's rules.
+        "2950 rpm" or "600 to 1800 rpm", by the window's rules; empty where only fixed frequencies push.
     margin : str
         "15 %", or "-10 % / +20 %" below and above. It has no default.
     on : str or None
@@ -50,7 +50,7 @@ def add_machine(
     new = Machine(
         id=fresh_id(model, "mc"),
         name=name.strip() or None,
-        speed=found.read("speed", typed_speed, speed),
+        speed=found.read("speed", typed_speed, speed) if speed.strip() else None,
         on=on,
         margin=found.read("margin", typed_margin, margin),
     )

@@ -60,8 +60,10 @@ class FormLine:
     noted : bool
         Whether source and status can be typed: a value stands there.
     source, status : str
-    choices : tuple of str
-        What may stand there, where it is one of some words; "" is none of them.
+    choices : tuple of pairs
+        What may stand there and how it is called, where it is one of some words.
+    blank : str
+        How it is called that none of them stands there.
     hint : str
         What is shown where nothing stands.
     more : bool
@@ -88,7 +90,8 @@ class FormLine:
     noted: bool = False
     source: str = ""
     status: str = ""
-    choices: tuple[str, ...] = ()
+    choices: tuple[tuple[str, str], ...] = ()
+    blank: str = "not told"
     hint: str = ""
     more: bool = False
     section: str = ""
@@ -133,7 +136,7 @@ class _Spec:
     needed: bool = False
     clears: tuple[tuple[str | int, ...], ...] = ()
     emptied: tuple[tuple[str | int, ...], ...] = ()
-    choices: tuple[str, ...] = ()
+    choices: tuple[tuple[str, str], ...] = ()
 
 
 def form_lines(model: Model, part_id: str) -> tuple[FormLine, ...]:
@@ -169,6 +172,11 @@ def part_of(model: Model, part_id: str) -> tuple[Address, Body | Support | Link 
             if part.id == part_id:
                 return (group, part_id), part
     raise LookupError(f'the model has no part "{part_id}"')
+
+
+def bodies_of(model: Model) -> tuple[tuple[str, str], ...]:
+    """Return every body with what it is called."""
+    return tuple((body.id, body.name or body.id) for body in model.bodies)
 
 
 def kind_of(part: Body | Support | Link | Machine) -> str:
@@ -348,7 +356,7 @@ def _machine(model: Model) -> Iterator[_Spec]:
     yield _Spec(("margin",), "margin", hint="such as 15 %")
     yield _NAME
     yield _Spec(("speed_tolerance",), "speed tolerance", more=True, hint="such as 1 %")
-    bodies = tuple(body.id for body in model.bodies)
+    bodies = bodies_of(model)
     yield _Spec(("on",), "speed is that of", more=True, motions=(_TRAIN, _PLANE, _SPACE), choices=bodies)
     yield _Spec(("run_up", "acceleration"), "run-up", more=True, hint="such as 50 rpm/s")
 
@@ -362,7 +370,7 @@ def _excitation_lines(model: Model, address: Address, given: Excitation) -> Iter
 
 
 def _excitation(model: Model, given: Excitation) -> Iterator[_Spec]:
-    bodies = tuple(body.id for body in model.bodies)
+    bodies = bodies_of(model)
     yield _Spec(("order",), "order", hint="such as 1", clears=(("frequency",),))
     yield _Spec(("frequency",), "fixed frequency", clears=(("order",), ("of",)))
     yield _Spec(("direction",), "direction", hint="not told")

@@ -224,3 +224,11 @@ def test_orders_and_frequencies_are_told_apart_and_excitations_are_called_by_the
         add_excitation(model, machine, "seven")
     with pytest.raises(ModelFaultsError, match="order: must be above zero"):
         add_excitation(model, machine, "0")
+
+
+def test_a_machine_of_fixed_frequencies_alone_has_no_speed():
+    model, machine = add_machine(Model(), "hall", "", "10 %")
+    assert model.machines[0].speed is None
+    assert add_excitation(model, machine, "100 Hz")[0].machines[0].excitations[0].frequency.text == "100 Hz"
+    with pytest.raises(ModelFaultsError, match="machine's speed, which is missing"):
+        add_excitation(model, machine, "1x")

@@ -171,7 +171,7 @@ def test_of_several_parts_equal_texts_stand_and_different_ones_say_so(document, 
 def test_parts_of_different_kinds_share_what_both_have(document, form):
     document.open(PUMP, example=True)
     form.show_parts(("motor", "ground"), BESIDE)
-    keys = {row.key for row in form._rows}
+    keys = {row.key for row in form.rows}
     assert keys == {"position x", "position y"}
 
 
@@ -206,7 +206,7 @@ def test_moments_of_inertia_wait_for_each_other(document, form):
     press(form.row("Iyy").value, Qt.Key.Key_Return)
     inertia = part(document, one).inertia
     assert [inertia.Ixx.text, inertia.Iyy.text, inertia.Izz.text] == ["2 kg m2", "3 kg m2", "2 kg m2"]
-    assert [(row.key, row.reason.text()) for row in form._rows if not row.reason.isHidden()] == []
+    assert [(row.key, row.reason.text()) for row in form.rows if not row.reason.isHidden()] == []
     assert document.stack.count() == 1
 
 

@@ -1,5 +1,7 @@
 """A form that floats on the sheet beside what it is about, and keeps keys and mouse from the sheet below."""
 
+from itertools import pairwise
+
 from PySide6.QtCore import QRect, QSize, Qt, QTimer, Signal
 from PySide6.QtGui import QKeyEvent
 from PySide6.QtWidgets import (
@@ -13,6 +15,8 @@ from PySide6.QtWidgets import (
     QVBoxLayout,
     QWidget,
 )
+
+from modalview.ui.sketch.formrow import FormRow, TypedLine
 
 # Pixels between the form and what it is about, and from the edges of the sheet.
 _GAP, _EDGE = 12, 6
@@ -60,6 +64,7 @@ class FloatingForm(QFrame):
         self.setAttribute(Qt.WidgetAttribute.WA_NoMousePropagation)
         self.setCursor(Qt.CursorShape.ArrowCursor)
         self._beside = QRect()
+        self.rows: list[FormRow] = []
         self.title = QLabel(self)
         self.title.setProperty("role", "strong")
         self.close_button = QToolButton(self, text="\u00d7", accessibleName="close the form")
@@ -136,6 +141,59 @@ class FloatingForm(QFrame):
             self.parentWidget().setFocus()
         self.closed.emit()
 
+    # Lines and the keyboard
+
+    def row(self, key: str) -> FormRow:
+        """Return the line of a key, such as "stiffness"; KeyError when there is none."""
+        for row in self.rows:
+            if row.key == key:
+                return row
+        raise KeyError(key)
+
+    def clear_rows(self) -> None:
+        """Take all lines away."""
+        for widget in (one for row in self.rows for one in row.widgets):
+            self.grid.removeWidget(widget)
+            widget.hide()
+            widget.deleteLater()
+        self.rows = []
+
+    def lead_keyboard(self, switches: tuple[QWidget, ...]) -> None:
+        """Lead Tab through all fields and on to the switches, and Enter from field to field."""
+        fields = [field for row in self.rows for field in row.fields]
+        for one, following in pairwise((*fields, *switches, self.close_button)):
+            QWidget.setTabOrder(one, following)
+        for field in fields:
+            field.gone_on.connect(lambda field=field: self._go_on(field))
+
+    def _go_on(self, field: QWidget) -> None:
+        fields = [one for row in self.rows for one in row.fields]
+        if field not in fields:
+            return
+        after = fields[fields.index(field) + 1 :]
+        following = next((one for one in after if not one.isHidden()), None)
+        if following is None:
+            self.end()
+        else:
+            self.go_to(following)
+
+    def go_to(self, field: QWidget) -> None:
+        """Give the keyboard to a field, its text chosen."""
+        field.setFocus()
+        if isinstance(field, TypedLine):
+            field.selectAll()
+        self.scroll.ensureWidgetVisible(field)
+
+    def take_keyboard(self) -> None:
+        """Give the keyboard to the first line, with its text chosen."""
+        first = next((row.value for row in self.rows if not row.value.isHidden()), None)
+        if first is not None:
+            self.go_to(first)
+
+    def end(self) -> None:
+        """Enter in the last field: close."""
+        self.hide_form()
+
     def keyPressEvent(self, event: QKeyEvent) -> None:  # noqa: N802  (Qt's name)
         """Esc closes; no key that a field does not want reaches the sheet below."""
         if event.key() == Qt.Key.Key_Escape:
@@ -148,4 +206,6 @@ class FloatingForm(QFrame):
 
     def leave(self) -> None:
         """Close without taking what was typed last."""
+        for row in self.rows:
+            row.give_back()
         self.hide_form()

@@ -10,11 +10,10 @@ from modalview.model.forms import FormLine
 
 # What may be typed in a line: its value and what is known about it.
 VALUE, TOLERANCE, SOURCE, STATUS = "value", "tolerance", "source", "status"
-STATUSES = ("", "datasheet", "measured", "assumed")
+STATUSES = (("", "not told"), *((one, one) for one in ("datasheet", "measured", "assumed")))
 SEVERAL = "several"
-_NO_CHOICE = "not told"
 # Of a character's mean width.
-_VALUE_WIDE, _TOLERANCE_WIDE, _CONVERTED_WIDE = 17, 10, 12
+_VALUE_WIDE, _TOLERANCE_WIDE, _WORD_WIDE = 17, 10, 10
 
 # Types a text at a slot of a line; the reason why not, or nothing.
 Commit = Callable[[str, str], str]
@@ -80,7 +79,7 @@ class TypedLine(QLineEdit):
             self.selectAll()
 
     def _refuse(self, reason: str) -> None:
-        if reason == self._reason:
+        if not reason and not self._reason:
             return
         self._reason = reason
         self.setProperty("refused", bool(reason))
@@ -95,17 +94,21 @@ class ChosenWord(QComboBox):
     gone_on = Signal()
 
     def __init__(
-        self, name: str, words: tuple[str, ...], commit: Callable[[str], str], parent: QWidget
+        self, name: str, words: tuple[tuple[str, str], ...], commit: Callable[[str], str], parent: QWidget
     ) -> None:
         super().__init__(parent)
         self.setAccessibleName(name)
-        self._words = words
         self.setSizeAdjustPolicy(QComboBox.SizeAdjustPolicy.AdjustToMinimumContentsLengthWithIcon)
-        self.setMinimumContentsLength(10)
-        for word in words:
-            self.addItem(word or _NO_CHOICE, word)
+        self.setMinimumContentsLength(_WORD_WIDE)
+        for word, called in words:
+            self.addItem(called, word)
         self._commit = commit
         self.activated.connect(self._on_chosen)
+
+    @property
+    def word(self) -> str:
+        """The word chosen."""
+        return self.currentData() or ""
 
     def show_word(self, word: str, hint: str = "") -> None:
         """Show the model's word; one that is none of the words is added."""
@@ -119,7 +122,7 @@ class ChosenWord(QComboBox):
         self.setCurrentIndex(at)
 
     def _on_chosen(self, _index: int) -> None:
-        reason = self._commit(self.currentData() or "")
+        reason = self._commit(self.word)
         self.setAccessibleDescription(reason)
         self.setToolTip(reason)
 
@@ -146,7 +149,8 @@ class FormRow:
         self.label.setProperty("role", "quiet")
         self.value: TypedLine | ChosenWord
         if line.choices:
-            self.value = ChosenWord(named, ("", *line.choices), lambda text: commit(VALUE, text), parent)
+            words = (("", line.blank), *line.choices)
+            self.value = ChosenWord(named, words, lambda text: commit(VALUE, text), parent)
         else:
             self.value = self._line(named, lambda text: commit(VALUE, text), _VALUE_WIDE)
         self.label.setBuddy(self.value)

@@ -1,7 +1,6 @@
 """The form beside a part on the sheet: its values, typed in place."""
 
 from dataclasses import replace
-from itertools import pairwise
 from typing import Any
 
 from PySide6.QtCore import QRect, QTimer, Signal
@@ -13,7 +12,7 @@ from modalview.model.filling import typed_together
 from modalview.model.forms import FormLine, form_lines, kind_of, part_of
 from modalview.ui.document import Document
 from modalview.ui.sketch.floating import FloatingForm
-from modalview.ui.sketch.formrow import SOURCE, STATUS, TOLERANCE, VALUE, FormRow, TypedLine
+from modalview.ui.sketch.formrow import SOURCE, STATUS, TOLERANCE, VALUE, FormRow
 from modalview.ui.values import converted, inherited
 
 _IN_SYSTEM = {"SI": "in SI", "mm-t": "in mm and t", "inch-pound": "in inch and lb"}
@@ -32,7 +31,6 @@ class PartForm(FloatingForm):
         self._ids: tuple[str, ...] = ()
         self._system = "SI"
         self._lines: list[list[FormLine]] = []  # of each part, those that all have
-        self._rows: list[FormRow] = []
         self._sections: dict[str, QLabel] = {}
         self._waiting: dict[str, str] = {}  # texts of lines that need others too, by key
         self._heads = [QLabel(self.inside) for _ in range(2)]
@@ -77,7 +75,7 @@ class PartForm(FloatingForm):
             self.more.setChecked(False)
             self.sources.setChecked(False)
         self._build()
-        if not self._rows:
+        if not self.rows:
             self.hide_form()
             return
         self.float_beside(beside)
@@ -95,21 +93,6 @@ class PartForm(FloatingForm):
             self._system = system
             self._refresh()
 
-    def take_keyboard(self) -> None:
-        """Give the keyboard to the first line, with its text chosen."""
-        first = next((row.value for row in self._rows if not row.value.isHidden()), None)
-        if first is not None:
-            first.setFocus()
-            if isinstance(first, TypedLine):
-                first.selectAll()
-
-    def row(self, key: str) -> FormRow:
-        """Return the line of a key, such as "stiffness"; KeyError when there is none."""
-        for row in self._rows:
-            if row.key == key:
-                return row
-        raise KeyError(key)
-
     def _read(self) -> None:
         """Read the lines that all parts have."""
         model = self._document.model
@@ -124,11 +107,12 @@ class PartForm(FloatingForm):
 
     def _build(self) -> None:
         """Make the rows anew."""
-        for label in (*self._sections.values(), *(one for row in self._rows for one in row.widgets)):
+        self.clear_rows()
+        for label in self._sections.values():
             self.grid.removeWidget(label)
             label.hide()
             label.deleteLater()
-        self._rows, self._sections = [], {}
+        self._sections = {}
         try:
             self._read()
         except LookupError:
@@ -142,8 +126,8 @@ class PartForm(FloatingForm):
                 at += 1
             row = FormRow(lines[0], self._named(), self._committer(lines[0].key), self.fit, self.inside)
             at = row.place(self.grid, at)
-            self._rows.append(row)
-        self._order()
+            self.rows.append(row)
+        self.lead_keyboard((self.more, self.sources))
         self._refresh()
 
     def _heading(self, section: str) -> QLabel:
@@ -162,38 +146,15 @@ class PartForm(FloatingForm):
         kinds = {kind_of(part_of(self._document.model, one)[1]) for one in self._ids}
         return f"{kinds.pop()}: {self._named()}" if len(kinds) == 1 else self._named()
 
-    def _order(self) -> None:
-        """Lead the keyboard through the fields and on to the switches, and Enter from field to field."""
-        fields = [field for row in self._rows for field in row.fields]
-        chain: list[QWidget] = [*fields, self.more, self.sources, self.close_button]
-        for one, following in pairwise(chain):
-            QWidget.setTabOrder(one, following)
-        for field in fields:
-            field.gone_on.connect(lambda field=field: self._go_on(field))
-
-    def _go_on(self, field: QWidget) -> None:
-        fields = [one for row in self._rows for one in row.fields]
-        if field not in fields:
-            return
-        after = fields[fields.index(field) + 1 :]
-        following = next((one for one in after if not one.isHidden()), None)
-        if following is None:
-            self.hide_form()
-            return
-        following.setFocus()
-        if isinstance(following, TypedLine):
-            following.selectAll()
-        self.scroll.ensureWidgetVisible(following)
-
     def _refresh(self) -> None:
         """Show what the model has."""
-        if not self._rows:
+        if not self.rows:
             return
         self.title.setText(self._title())
-        for row, lines in zip(self._rows, self._lines, strict=True):
+        for row, lines in zip(self.rows, self._lines, strict=True):
             self._show_row(row, lines)
         self._heads[0].setText(_IN_SYSTEM[self._system])
-        shown = [row for row in self._rows if not row.value.isHidden()]
+        shown = [row for row in self.rows if not row.value.isHidden()]
         self._heads[0].setVisible(any(row.converted.text() for row in shown))
         self._heads[1].setVisible(any(not row.tolerance.isHidden() for row in shown))
         self.more.setVisible(any(lines[0].more for lines in self._lines))
@@ -241,10 +202,10 @@ class PartForm(FloatingForm):
 
     def _rebuild(self) -> None:
         """Make the rows anew and give the keyboard back to the line that had it."""
-        keyed = {field: (row.key, number) for row in self._rows for number, field in enumerate(row.fields)}
+        keyed = {field: (row.key, number) for row in self.rows for number, field in enumerate(row.fields)}
         held = keyed.get(self.focusWidget())
         self._build()
-        if held is not None and any(row.key == held[0] for row in self._rows):
+        if held is not None and any(row.key == held[0] for row in self.rows):
             self.row(held[0]).fields[held[1]].setFocus()
 
     # What is typed
@@ -346,10 +307,8 @@ class PartForm(FloatingForm):
 
     def leave(self) -> None:
         """Close without taking what was typed last."""
-        for row in self._rows:
-            row.give_back()
         self._waiting = {}
-        self.hide_form()
+        super().leave()
 
 
 def _agreed(lines: list[FormLine]) -> FormLine:
