@@ -2,8 +2,8 @@
 
 from collections.abc import Callable, Sequence
 
-from PySide6.QtCore import Qt
-from PySide6.QtGui import QGuiApplication
+from PySide6.QtCore import QSize, Qt
+from PySide6.QtGui import QFontMetrics, QGuiApplication
 from PySide6.QtWidgets import (
     QDialog,
     QDialogButtonBox,
@@ -43,6 +43,13 @@ def ask(parent: QWidget, text: str, more: str, choices: Sequence[Choice]) -> QMe
     return box
 
 
+def _room(parent: QWidget | None, wide: float, high: float) -> QSize:
+    """Return a size in heights of a line, as far as the screen has room for it."""
+    line = QFontMetrics(QGuiApplication.font()).height()
+    screen = (parent.screen() if parent is not None else QGuiApplication.primaryScreen()).availableGeometry()
+    return QSize(min(round(wide * line), screen.width() - 40), min(round(high * line), screen.height() - 60))
+
+
 class TextDialog(QDialog):
     """A lead sentence over a text that can be copied: faults of a file, an unexpected error."""
 
@@ -50,7 +57,7 @@ class TextDialog(QDialog):
         super().__init__(parent)
         self.setAttribute(Qt.WidgetAttribute.WA_DeleteOnClose)
         self.setWindowTitle(title)
-        self.resize(640, 340)
+        self.resize(_room(parent, 46, 24))
         words = QLabel(lead, self)
         words.setWordWrap(True)
         self.text = QPlainTextEdit(text, self)
@@ -73,7 +80,7 @@ class ReadingDialog(QDialog):
         super().__init__(parent)
         self.setAttribute(Qt.WidgetAttribute.WA_DeleteOnClose)
         self.setWindowTitle(title)
-        self.resize(660, 560)
+        self.resize(_room(parent, 47, 40))
         self.reader = QTextBrowser(self)
         self.reader.setMarkdown(markdown)
         self.reader.setAccessibleName(title)

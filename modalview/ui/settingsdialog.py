@@ -3,19 +3,23 @@
 from collections.abc import Callable
 from typing import Any
 
-from PySide6.QtCore import Qt
+from PySide6.QtCore import QEvent, Qt, QTimer
 from PySide6.QtWidgets import (
     QCheckBox,
     QComboBox,
     QDialog,
     QDialogButtonBox,
+    QFrame,
     QGridLayout,
     QLabel,
+    QScrollArea,
     QVBoxLayout,
     QWidget,
 )
 
 from modalview.ui.settings import ASKED, Setting, Settings
+
+_WIDTH = 34.0  # heights of a line
 
 
 class SettingsDialog(QDialog):
@@ -29,20 +33,49 @@ class SettingsDialog(QDialog):
         self.setWindowTitle("Settings")
         self._settings, self._apply = settings, apply
         self.fields: dict[str, QWidget] = {}
-        grid = QGridLayout()
+        self.form = QWidget(self)
+        self.form.setObjectName("settingsForm")
+        grid = QGridLayout(self.form)
         grid.setColumnStretch(1, 1)
         grid.setHorizontalSpacing(14)
         for number, setting in enumerate(ASKED):
             self._add(grid, 2 * number, setting)
-        buttons = QDialogButtonBox(QDialogButtonBox.StandardButton.Close, self)
-        back = buttons.addButton("Back to defaults", QDialogButtonBox.ButtonRole.ResetRole)
+        grid.setRowStretch(2 * len(ASKED), 1)
+        self._scroll = QScrollArea(self)
+        self._scroll.setObjectName("settingsScroll")
+        self._scroll.setWidgetResizable(True)
+        self._scroll.setFrameShape(QFrame.Shape.NoFrame)
+        self._scroll.setHorizontalScrollBarPolicy(Qt.ScrollBarPolicy.ScrollBarAlwaysOff)
+        self._scroll.setWidget(self.form)
+        self._buttons = QDialogButtonBox(QDialogButtonBox.StandardButton.Close, self)
+        back = self._buttons.addButton("Back to defaults", QDialogButtonBox.ButtonRole.ResetRole)
         back.clicked.connect(self._go_back)
-        buttons.rejected.connect(self.close)
+        back.setAutoDefault(False)
+        self._buttons.rejected.connect(self.close)
         layout = QVBoxLayout(self)
-        layout.addLayout(grid)
-        layout.addStretch(1)
-        layout.addWidget(buttons)
-        self.setMinimumWidth(34 * self.fontMetrics().averageCharWidth() * 2)
+        layout.addWidget(self._scroll, 1)
+        layout.addWidget(self._buttons)
+        # The text size may be changed here: the layouts have measured the new one when this comes.
+        self._fitter = QTimer(self, singleShot=True, interval=0)
+        self._fitter.timeout.connect(self._fit)
+        self._fit()
+
+    def _fit(self) -> None:
+        """Be as large as the text asks for, as far as the screen has room; the rest scrolls."""
+        screen = self.screen().availableGeometry()
+        wide = min(round(_WIDTH * self.fontMetrics().height()), screen.width() - 40)
+        self.form.ensurePolished()
+        margins = self.layout().contentsMargins()
+        inner = wide - margins.left() - margins.right() - self._scroll.verticalScrollBar().sizeHint().width()
+        form = self.form.layout().heightForWidth(inner)
+        high = form + self._buttons.sizeHint().height() + margins.top() + margins.bottom() + 12
+        self.resize(wide, min(high, screen.height() - 60))
+
+    def changeEvent(self, event: QEvent) -> None:  # noqa: N802  (Qt's name)
+        """Follow the text size."""
+        super().changeEvent(event)
+        if event.type() in (QEvent.Type.FontChange, QEvent.Type.StyleChange) and hasattr(self, "_fitter"):
+            self._fitter.start()
 
     def _add(self, grid: QGridLayout, row: int, setting: Setting) -> None:
         field = self.fields[setting.name] = self._field(setting)
@@ -53,6 +86,7 @@ class SettingsDialog(QDialog):
         help_ = QLabel(setting.text, self)
         help_.setProperty("role", "small")
         help_.setWordWrap(True)
+        help_.setContentsMargins(0, 0, 0, 6)
         grid.addWidget(label, row, 0)
         grid.addWidget(field, row, 1)
         grid.addWidget(help_, row + 1, 1)

@@ -12,7 +12,8 @@ from modalview.places import resources
 # Text sizes offered in the View menu, in per cent of the system's own.
 TEXT_PERCENTS = (100, 125, 150, 175, 200)
 _PX_PER_PT = 4 / 3
-_SIZES = ("text", "small", "heading", "verdict", "sentence", "knob", "knob_half", "knob_out", "box")
+_SIZES = ("text", "small", "heading", "verdict", "sentence", "knob", "knob_half", "knob_out", "box", "drop")
+_SIGNS = ("tick", "down")  # pictures in resources, one for each theme
 
 
 @dataclass(frozen=True, slots=True)
@@ -101,9 +102,9 @@ def style_sheet(theme: Theme, point_size: float) -> str:
     }
     knob, box = (2 * round(share * point_size * _PX_PER_PT / 2) for share in (1.0, 0.95))
     sizes |= {"knob": f"{knob}px", "knob_half": f"{knob // 2}px", "knob_out": f"{1 - knob // 2}px"}
-    sizes |= {"box": f"{box}px"}
-    tick = (resources() / f"tick-{theme.name}.svg").as_posix()
-    return template.substitute(asdict(theme), tick=tick, **sizes)
+    sizes |= {"box": f"{box}px", "drop": f"{2 * box}px"}
+    signs = {name: (resources() / f"{name}-{theme.name}.svg").as_posix() for name in _SIGNS}
+    return template.substitute(asdict(theme), **signs, **sizes)
 
 
 def palette(theme: Theme) -> QPalette:
@@ -134,7 +135,7 @@ def palette(theme: Theme) -> QPalette:
 
 def token_names() -> tuple[str, ...]:
     """Return the names a style sheet may use."""
-    return (*(one.name for one in fields(Theme)), *_SIZES, "tick")
+    return (*(one.name for one in fields(Theme)), *_SIZES, *_SIGNS)
 
 
 def apply_theme(application: QApplication, choice: str, text_percent: int) -> Theme:

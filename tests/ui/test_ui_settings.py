@@ -1,5 +1,6 @@
 import pytest
 from PySide6.QtCore import QSettings, Qt
+from PySide6.QtWidgets import QLabel, QPushButton
 
 from modalview.ui import settings as names
 from modalview.ui.settings import ALL, ASKED, Settings, settings_text
@@ -93,3 +94,32 @@ def test_reduced_motion_keeps_modes_still_until_play_is_pressed(pump):
     pump.play_bar.pause.setChecked(False)
     assert pump.swing.running
     pump.on_move(False)
+
+
+def test_the_settings_grow_with_the_text_and_cut_nothing(window, qapp):
+    window.on_settings()
+    (dialog,) = window.findChildren(SettingsDialog)
+    for _ in range(3):
+        qapp.processEvents()
+    small = dialog.width()
+    field = dialog.fields["text_percent"]
+    field.setCurrentIndex(field.findData(200))
+    for _ in range(5):
+        qapp.processEvents()
+    assert dialog.width() > 1.4 * small
+    for label in dialog.form.findChildren(QLabel):
+        assert label.width() >= label.minimumSizeHint().width()
+        assert label.height() >= label.heightForWidth(label.width()) or not label.wordWrap()
+    dialog.close()
+
+
+def test_enter_in_the_settings_does_not_put_them_back(window, qapp):
+    window.on_settings()
+    (dialog,) = window.findChildren(SettingsDialog)
+    qapp.processEvents()
+    assert [one.text() for one in dialog.findChildren(QPushButton) if one.isDefault()] in (
+        [],
+        ["Close"],
+        ["&Close"],
+    )
+    dialog.close()
