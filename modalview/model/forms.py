@@ -302,9 +302,9 @@ def _link(model: Model, part: Link) -> Iterator[_Spec]:
         yield _Spec(("axes", "y"), "own axis y", more=True, motions=(_SPACE,), hint="such as 0 1 0")
     yield from _ends(model, part)
     yield _WHOLE
-    if isinstance(part, Spring | Mount | Shaft | Beam | Gear):
-        yield _Spec(("dynamic_ratio",), "dynamic ratio", more=True, hint="such as 1.2")
-        yield _Spec(("loss_factor",), "loss factor", more=True, hint="such as 0.1")
+    stiff = tuple(Motion) if isinstance(part, Spring | Mount | Shaft | Beam | Gear) else ()
+    yield _Spec(("dynamic_ratio",), "dynamic ratio", more=True, motions=stiff, hint="such as 1.2")
+    yield _Spec(("loss_factor",), "loss factor", more=True, motions=stiff, hint="such as 0.1")
     yield _Spec(("rated_load",), "rated load", more=True)
 
 

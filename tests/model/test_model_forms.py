@@ -5,6 +5,7 @@ from pathlib import Path
 import pytest
 
 from modalview.errors import InputError
+from modalview.model.editable import editable_fields
 from modalview.model.filling import typed_together
 from modalview.model.forms import form_lines, kind_of, part_of
 from modalview.model.rules import faults
@@ -46,6 +47,27 @@ def test_no_two_lines_of_a_form_have_the_same_key(name, part):
     lines = form_lines(MODELS[name], part)
     assert len({line.key for line in lines}) == len(lines)
     assert kind_of(part_of(MODELS[name], part)[1])
+
+
+# Typed in the table alone: what a change may do, ranges to skip.
+TABLE_ALONE = ("vary_limits", "barred_ranges", "shape")
+
+
+@pytest.mark.parametrize(("name", "part"), PARTS)
+def test_every_value_of_the_table_has_its_line_in_the_form(name, part):
+    model = MODELS[name]
+    address, found = part_of(model, part)
+    parts = [address, *((*address, "excitations", one.id) for one in getattr(found, "excitations", ()))]
+    shown = [field.address for one in parts for field in editable_fields(model, one)]
+    lines = form_lines(model, part)
+    held = {line.address for line in lines} | {line.tolerance_address for line in lines}
+    missing = [
+        one
+        for one in shown
+        if not set(TABLE_ALONE) & set(one)
+        and not any(one[:count] in held for count in range(3, len(one) + 1))
+    ]
+    assert missing == []
 
 
 def test_a_gear_has_teeth_or_a_ratio_and_typing_one_takes_the_other_away():

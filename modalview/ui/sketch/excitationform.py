@@ -77,7 +77,7 @@ _ASKED = (
     _Ask(
         "rate",
         "order or frequency",
-        "such as 1x or 100 Hz",
+        "1x or 100 Hz",
         lambda text, _: typed_rate(text),
         'give an order of the speed, such as "1x", or a fixed frequency, such as "100 Hz"',
         quantity=q.FREQUENCY,

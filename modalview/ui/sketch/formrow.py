@@ -13,7 +13,7 @@ VALUE, TOLERANCE, SOURCE, STATUS = "value", "tolerance", "source", "status"
 STATUSES = (("", "not told"), *((one, one) for one in ("datasheet", "measured", "assumed")))
 SEVERAL = "several"
 # Of a character's mean width.
-_VALUE_WIDE, _TOLERANCE_WIDE, _WORD_WIDE = 17, 10, 10
+_VALUE_WIDE, _TEXT_WIDE, _TOLERANCE_WIDE, _WORD_WIDE = 17, 30, 10, 10
 
 # Types a text at a slot of a line; the reason why not, or nothing.
 Commit = Callable[[str, str], str]
@@ -152,7 +152,8 @@ class FormRow:
             words = (("", line.blank), *line.choices)
             self.value = ChosenWord(named, words, lambda text: commit(VALUE, text), parent)
         else:
-            self.value = self._line(named, lambda text: commit(VALUE, text), _VALUE_WIDE)
+            wide = _TEXT_WIDE if self._wide else _VALUE_WIDE
+            self.value = self._line(named, lambda text: commit(VALUE, text), wide)
         self.label.setBuddy(self.value)
         self.converted = QLabel(parent)
         self.converted.setProperty("role", "quiet")
