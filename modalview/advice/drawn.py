@@ -1,6 +1,6 @@
 """The doubts that need the model alone: there for a model that cannot be assembled, too."""
 
-from modalview.advice import inertias, joints, layout, magnitudes, symmetry
+from modalview.advice import feet, inertias, joints, layout, magnitudes, symmetry
 from modalview.advice.doubt import Doubt, few
 from modalview.advice.survey import Survey
 from modalview.model.parts import Model
@@ -35,7 +35,7 @@ def doubts(model: Model) -> tuple[Doubt, ...]:
         inertias.outside_its_size(survey),
         inertias.gd2(survey),
         inertias.reflected(survey),
-        layout.outside_its_feet(survey),
+        feet.outside_its_feet(survey),
         layout.across_its_ends(survey),
         layout.same_place(survey),
         symmetry.partners(survey),

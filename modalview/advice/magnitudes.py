@@ -133,7 +133,11 @@ def far_off(values: list[Typed]) -> Iterator[Doubt]:
             yield from _far_apart(*sorted(group, key=_size))
         elif len(group) > 2 and max(map(_size, group)) > FAR * min(map(_size, group)):
             sizes = sorted(map(_size, group))
+            # The median of any others lies between these two.
+            low, high = sizes[(len(sizes) - 2) // 2], sizes[len(sizes) // 2 + (len(sizes) % 2)]
             for one in group:
+                if high / FAR <= _size(one) <= low * FAR:
+                    continue
                 middle = _median_without(sizes, _size(one))
                 if not middle / FAR <= _size(one) <= middle * FAR:
                     yield _far(one, middle, len(group) - 1)

@@ -1,11 +1,16 @@
 """Values far off those of their kind, and values that nobody has typed."""
 
+from statistics import median
+
 import pytest
+from hypothesis import given, settings
+from hypothesis import strategies as st
 
 from modalview.advice.drawn import doubts
+from modalview.advice.magnitudes import FAR, SPRINGS, Typed, far_off
 from modalview.model.adding import add_body, add_link, add_support
-from modalview.model.parts import End, Model, Motion
-from modalview.model.values import STARTING
+from modalview.model.parts import End, Model, Motion, Spring
+from modalview.model.values import STARTING, Entry, Value
 
 G = {"id": "g", "position": ["0 m", "0 m"]}
 
@@ -69,6 +74,24 @@ def test_mounts_are_compared_with_springs_and_their_turning_stiffness_is_not(tol
     assert [(one.parts, "stiffness y 1e10 N/m" in one.text) for one in found] == [(("mt",), True)]
 
 
+@settings(max_examples=40)
+@given(st.lists(st.integers(-6, 12).map(lambda power: 2.5 * 10.0**power), min_size=3, max_size=9))
+def test_exactly_those_a_thousand_times_the_median_of_the_others_are_doubted(sizes):
+    springs = [
+        Spring(
+            id=f"k{i}", from_=End(body="a"), to=End(body="b"), stiffness=Value(Entry(f"{size:g} N/m", size))
+        )
+        for i, size in enumerate(sizes)
+    ]
+    expected = []
+    for i, size in enumerate(sizes):
+        middle = median(sizes[:i] + sizes[i + 1 :])
+        if size > FAR * middle or size < middle / FAR:
+            expected.append((f"k{i}",))
+    typed = [Typed(SPRINGS, spring, "stiffness", spring.stiffness) for spring in springs]
+    assert [one.parts for one in far_off(typed)] == expected
+
+
 def test_many_of_one_rule_are_folded_into_one_that_holds_all_their_parts(told):
     stiffnesses = ["1e6 N/m"] * 20 + ["1e10 N/m"] * 9
     found = told("value far off", "single axis", **chain(stiffnesses))
@@ -104,10 +127,10 @@ def test_parts_as_the_program_draws_them_raise_no_other_doubt_than_their_startin
 @pytest.mark.parametrize(("inertia", "fires"), [("640 kg m2", False), ("0.02 kg m2", True)])
 def test_inertias_of_bodies_with_mass_are_compared_for_their_mass(told, inertia, fires):
     # 2 kg and 0.01 kg m2, 20 kg and 0.4 kg m2: small bodies are no sign that a large one is mistyped.
-    given = [("2 kg", "0.01 kg m2"), ("20 kg", "0.4 kg m2"), ("3200 kg", inertia)]
+    sizes = [("2 kg", "0.01 kg m2"), ("20 kg", "0.4 kg m2"), ("3200 kg", inertia)]
     bodies = [
         {"id": f"m{i}", "mass": mass, "inertia": own, "position": [f"{i} m", "1 m"]}
-        for i, (mass, own) in enumerate(given)
+        for i, (mass, own) in enumerate(sizes)
     ]
     links = [
         {
