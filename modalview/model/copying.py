@@ -179,9 +179,8 @@ def _fresh(name: str, taken: Collection[str]) -> str:
     if name not in taken:
         return name
     stem = name.rstrip(DIGITS)
-    if stem == name:
-        return free_id(f"{name} ", taken, first=2)
-    return free_id(stem, taken)
+    stem = f"{name} " if stem == name else stem
+    return free_id(stem, taken, first=2 if stem.endswith(" ") else 1)
 
 
 def _renamed(piece: Model, names: Mapping[str, str]) -> Model:
