@@ -14,6 +14,7 @@ from PySide6.QtCore import QObject, QStandardPaths, QTimer, Signal
 
 from modalview.store.recovery import Draft, Session
 from modalview.ui.document import Document
+from modalview.ui.errand import few_collections
 from modalview.ui.later import Later
 
 AUTOSAVE_MS = 30_000
@@ -138,7 +139,8 @@ class Autosave(QObject):
 def _tried(work: Callable[[], None]) -> str:
     """Do it; return why it failed, or nothing."""
     try:
-        work()
+        with few_collections():  # the text of a large model is made of many small objects
+            work()
     except OSError as fault:
         return fault.strerror or str(fault)
     return ""

@@ -36,15 +36,28 @@ def main(file: str, folder: str, seed: str, interval_ms: str, save_share: str) -
         before = time.monotonic()
         window.document.type_value(BASE_SUPPORT, f"{chance.randint(100, 400)} kN/mm")
         window.document.type_value(("title",), f"edit {made}")
-        os.write(1, f"{made} {before}\n".encode())
+        _say(f"{made} {before}")
         if chance.random() < float(save_share):
             window.on_save()
 
     timer = QTimer(interval=EDIT_MS)
     timer.timeout.connect(edit)
-    os.write(1, b"ready\n")
-    timer.start()
+
+    def begin() -> None:
+        window.analysis.damped_changed.disconnect(begin)
+        _say("ready")
+        timer.start()
+
+    # Only now everything is imported: a window that is still starting holds nothing to be lost.
+    window.analysis.damped_changed.connect(begin)
     program.exec()
+
+
+def _say(words: str) -> None:
+    try:
+        os.write(1, f"{words}\n".encode())
+    except BrokenPipeError:  # nobody is there to kill it
+        os._exit(1)
 
 
 if __name__ == "__main__":
