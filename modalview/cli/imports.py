@@ -7,8 +7,11 @@ from modalview.cli.printing import OK, one_line, say
 from modalview.errors import FileAccessError, UsageError
 from modalview.model.parts import Motion
 from modalview.store import save_model
+from modalview.store.tables_columns import is_unit
 from modalview.store.tables_network import COORDINATES, import_network
 from modalview.units import quantities as q
+from modalview.units.quantities import Quantity
+from modalview.units.table import accepted_spellings
 
 SUFFIX = ".keepclear"
 UNITS = (("length", q.LENGTH), ("mass", q.MASS), ("stiffness", q.STIFFNESS))
@@ -41,7 +44,7 @@ def run_import(words: argparse.Namespace) -> int:
         raise UsageError(f"-o names a model file, such as model{SUFFIX}; found {str(target)!r}")
     if target.exists() and not words.replace:
         raise FileAccessError(f"{target} is there already; choose another name, or say --replace")
-    units = {quantity: text for name, quantity in UNITS if (text := getattr(words, f"{name}_unit"))}
+    units = _units(words)
     motion, commas = Motion(words.motion), words.decimal_comma
     found = import_network(words.nodes, words.springs, motion, units, commas_decimal=commas)
     save_model(found.model, target, known=None)
@@ -56,6 +59,19 @@ def run_import(words: argparse.Namespace) -> int:
         say(note)
     say("It has no machine yet: add its speed, orders and the margin wanted before a check.")
     return OK
+
+
+def _units(words: argparse.Namespace) -> dict[Quantity, str]:
+    found = {}
+    for name, quantity in UNITS:
+        unit = getattr(words, f"{name}_unit")
+        if unit is None:
+            continue
+        if not is_unit(unit, quantity):
+            known = ", ".join(accepted_spellings(quantity))
+            raise UsageError(f"--{name}-unit: {unit!r} is no unit of {name}; write one of {known}")
+        found[quantity] = unit
+    return found
 
 
 def _counted(number: int, one: str, many: str) -> str:

@@ -48,7 +48,7 @@ def read_bytes(path: str | os.PathLike[str]) -> bytes:
     except FileNotFoundError:
         raise FileAccessError(f"{path}: there is no such file") from None
     except IsADirectoryError:
-        raise FileAccessError(f"{path} is a folder, not a model file") from None
+        raise FileAccessError(f"{path} is a folder, not a file") from None
     except (OSError, ValueError) as fault:
         why = "it is a folder" if Path(path).is_dir() else getattr(fault, "strerror", None) or str(fault)
         raise FileAccessError(f"{path} cannot be read: {why}") from None

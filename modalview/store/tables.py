@@ -3,6 +3,7 @@
 Rows count from 1 with the headings, as a spreadsheet shows them.
 """
 
+import codecs
 import csv
 import io
 import re
@@ -89,7 +90,9 @@ def _separated(text: str) -> tuple[str, str]:
 
 def _decoded(data: bytes, name: str) -> str:
     try:
-        text = data.decode("utf-8-sig")
+        # Some spreadsheets write "Unicode text" in pairs of bytes, and mark it.
+        pairs = data.startswith((codecs.BOM_UTF16_LE, codecs.BOM_UTF16_BE))
+        text = data.decode("utf-16" if pairs else "utf-8-sig")
     except UnicodeDecodeError as fault:
         reason = "the table is not UTF-8 text; save it as CSV in UTF-8"
         raise FileFaultsError((Fault(f"{name}, byte {fault.start}", reason),)) from None
@@ -138,7 +141,13 @@ def decimal_comma(table: Table, columns: Sequence[int], *, told: bool = False) -
         return ""
     row, column, cell = with_comma[0]
     plain = next((one for *_, one in with_comma if not _like_thousands(one)), cell if told else "")
-    if any("." in _number(other) for *_, other in cells):
+    both = next((place for place in with_comma if "." in _number(place[2])), None)
+    if both:
+        row, column, cell = both
+        reason = (
+            f'"{cell}" has a comma and a point; write it with one point and without a thousands separator'
+        )
+    elif any("." in _number(other) for *_, other in cells):
         reason = f'"{cell}" has a comma where other numbers have a point; write all with a point'
     elif plain:
         return plain

@@ -104,7 +104,7 @@ def find_columns(
 
 
 def _without_unit(table: Table, role: Role, quantity: Quantity, column: Column) -> list[Fault]:
-    if column.unit and _known(column.unit, quantity):
+    if column.unit and is_unit(column.unit, quantity):
         return []
     heading = table.headings[column.index]
     if column.unit:
@@ -134,7 +134,7 @@ def _matches(heading: str, role: Role) -> list[tuple[int, str]]:
     for rank, alias in enumerate(role.headings):
         if plain.lower().replace(" ", "_").startswith(alias):
             unit = _unit_text(plain[len(alias) :])
-            if unit and _known(unit, role.quantity):
+            if unit and is_unit(unit, role.quantity):
                 return [(rank, unit)]
     return []
 
@@ -148,7 +148,8 @@ def _unit_text(rest: str) -> str:
     return parted[1].strip().replace("_per_", "/") if parted else ""
 
 
-def _known(unit: str, quantity: Quantity) -> bool:
+def is_unit(unit: str, quantity: Quantity) -> bool:
+    """Tell whether a table may have its cells in a unit, those of molecules included."""
     return unit.lower() in _SMALL[quantity] or find_unit(unit, quantity) is not None
 
 

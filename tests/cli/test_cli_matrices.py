@@ -228,6 +228,12 @@ class TestImport:
     WORDS = ("--motion", "single axis", "--stiffness-unit", "N/m")
     TABLES = tuple(open_data.HERE / "gnm_1a8o" / name for name in ("nodes.csv", "springs.csv"))
 
+    def test_a_unit_that_is_none_is_refused_also_where_headings_name_another(self, capsys, tmp_path):
+        words = [*self.words(tmp_path / "m.keepclear"), "--stiffness-unit", "furlong"]
+        code, _, err = run(capsys, *words)
+        assert code == 2
+        assert "--stiffness-unit: 'furlong' is no unit of stiffness; write one of N/m" in err
+
     def words(self, target, tables=TABLES):
         return ("import", "--nodes", tables[0], "--springs", tables[1], *self.WORDS, "-o", target)
 

@@ -64,6 +64,8 @@ class TestReading:
             "\ufeffname, mass kg, X_mm, Y_mm,,\r\n\r\nA, 5, 0, 0,,\r\nB, 3, 100, 0\r\n".replace(
                 "B, 3, 100, 0\r\n", "B, 3, 100, 0,,\r\n# a note\r\nfloor, fixed, 200, 50,,\r\n"
             ),
+            NODES.replace(",", "\t").encode("utf-16"),
+            b"\xfe\xff" + NODES.encode("utf-16-be"),
             'node,"mass","x","y"\nA,5000 g,0 m,0 m\nB,3 kg,10 cm,0 m\nfloor,fixed,200 mm,50 mm\n',
         ],
     )
@@ -181,6 +183,7 @@ class TestFaults:
             ("node,mass_kg\n,1\n", 'row 2, column "node": is empty'),
             ("node,mass_kg\nA,1\nA,2\n", 'row 3, column "node": "A" is already the node of row 2'),
             ('node,mass_kg\nA,"1,200"\n', '"1,200" can be read as 1.200 or 1200; write a point'),
+            ('node,mass_kg\nA,"1.500,0"\n', '"1.500,0" has a comma and a point; write it with one point'),
             ("node;mass_kg\nA;1,5\nB;1.5\n", "has a comma where other numbers have a point"),
         ],
     )
