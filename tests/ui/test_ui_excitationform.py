@@ -111,9 +111,21 @@ def test_the_first_line_that_is_refused_or_missing_tells_why_and_nothing_changes
     form.add_button.click()
     assert words in form.row(key).reason.text()
     assert not form.row(key).reason.isHidden()
+    assert form.row(key).value.property("refused")
+    assert words in form.row(key).value.accessibleDescription()
     assert sheet.window().focusWidget() is form.row(key).value
     assert document.model is before
     assert document.stack.count() == 0
+
+
+def test_what_the_rules_refused_is_tried_anew_when_another_line_is_mended(document, form):
+    form.show_at("m1", (0.0, 1.0), BESIDE)
+    fill(form, speed="2950 rpm", margin="15 %", rate="1x", direction="rz")
+    form.add_button.click()
+    assert "needs a torque as magnitude" in form.row("direction").reason.text()
+    fill(form, magnitude="150 N m")
+    form.add_button.click()
+    assert document.model.machines[0].excitations[0].magnitude.torque.text == "150 N m"
 
 
 def test_an_existing_machine_is_offered_and_asked_nothing_again(document, form):

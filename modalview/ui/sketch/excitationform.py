@@ -20,7 +20,7 @@ from modalview.model.parts import End, Excitation, Model, Motion, SpeedRange
 from modalview.model.typed_machines import typed_magnitude, typed_margin, typed_rate, typed_speed
 from modalview.ui.document import Document
 from modalview.ui.sketch.floating import FloatingForm
-from modalview.ui.sketch.formrow import ChosenWord, FormRow
+from modalview.ui.sketch.formrow import ChosenWord, FormRow, TypedLine
 from modalview.ui.values import converted
 from modalview.units import quantities as q
 from modalview.units.quantities import Quantity
@@ -95,10 +95,10 @@ _DIRECTION_HINTS = {
     Motion.SPACE: "such as z or rotating",
 }
 _STRENGTH_HINTS = {
-    Motion.SINGLE_AXIS: "such as 400 N or G 6.3 of 320 kg",
+    Motion.SINGLE_AXIS: "400 N or G 6.3 of 320 kg",
     Motion.SHAFT_TRAIN: "such as 150 N m",
-    Motion.PLANE: "such as 400 N or G 6.3 of 320 kg",
-    Motion.SPACE: "such as 400 N or G 6.3 of 320 kg",
+    Motion.PLANE: "400 N or G 6.3 of 320 kg",
+    Motion.SPACE: "400 N or G 6.3 of 320 kg",
 }
 # A single direction needs no asking.
 _ONLY_DIRECTION = {Motion.SINGLE_AXIS: "y", Motion.SHAFT_TRAIN: "rz"}
@@ -260,7 +260,7 @@ class ExcitationForm(FloatingForm):
                 continue  # a fixed frequency needs no speed
             row = self.row(ask.key)
             if ask.needed and not row.value.isHidden() and not self._text(ask.key):
-                row.tell(ask.needed)
+                row.value.refuse(ask.needed)
                 self.go_to(row.value)
                 return True
         return False
@@ -293,10 +293,11 @@ class ExcitationForm(FloatingForm):
         for fault in error.faults:
             field = fault.path.split(" . ")[0]
             key = _TOLD_AT.get(field, field)
-            key = key if any(row.key == key for row in self.rows) else "rate"
+            typed = any(row.key == key and isinstance(row.value, TypedLine) for row in self.rows)
+            key = key if typed else "rate"
             told.setdefault(key, f"{fault.path} {fault.reason}")
         for key, reason in told.items():
-            self.row(key).tell(reason)
+            self.row(key).value.refuse(reason)
         self.go_to(next(row.value for row in self.rows if row.key in told))
 
 

@@ -28,7 +28,7 @@ def place_beside(size: QSize, beside: QRect, inside: QRect) -> QRect:
     Where there is room on no side it takes the side with the most, moved so that it lies inside.
 
     >>> place_beside(QSize(100, 50), QRect(10, 10, 20, 20), QRect(0, 0, 400, 300)).x()
-    42
+    41
     """
     free = {
         "right": inside.right() - beside.right() - _GAP,

@@ -61,6 +61,11 @@ class TypedLine(QLineEdit):
         self._refuse(reason)
         return not reason
 
+    def refuse(self, reason: str) -> None:
+        """Show why what stands here cannot be taken; it is tried anew at the next Enter."""
+        self.setModified(True)
+        self._refuse(reason)
+
     def _on_enter(self) -> None:
         if self.enter():
             self.gone_on.emit()
