@@ -8,6 +8,8 @@ from PySide6.QtWidgets import QGridLayout, QLabel, QLineEdit, QWidget
 
 from modalview.errors import InputError
 
+_USUAL = "000.000 Hz"  # the widest that is usual beside a field
+
 
 class _Line(QLineEdit):
     """Esc gives back what stood there."""
@@ -36,7 +38,6 @@ class EntryField(QWidget):
         self.label.setBuddy(self.line)
         self.converted = QLabel(self)
         self.converted.setProperty("role", "quiet")
-        self.converted.setMinimumWidth(9 * self.fontMetrics().averageCharWidth())
         self.reason = QLabel(self)
         self.reason.setProperty("role", "refusal")
         self.reason.setWordWrap(True)
@@ -55,6 +56,8 @@ class EntryField(QWidget):
     def show_value(self, text: str, converted: str) -> None:
         """Show the model's value; a refused entry is left standing until it is mended or taken back."""
         self.converted.setText(converted)
+        # Fields one above the other end at one line, whatever is converted beside them.
+        self.converted.setMinimumWidth(self.fontMetrics().horizontalAdvance(_USUAL))
         changed = text != self._text
         self._text = text
         if changed or not self.refused:

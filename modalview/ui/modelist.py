@@ -168,6 +168,12 @@ class ModeList(QAbstractListModel):
         """Return the number of modes."""
         return 0 if parent.isValid() else len(self._modes)
 
+    def worst_row(self) -> int:
+        """Return what is looked at first: the first mode in a band, else the first elastic one."""
+        elastic = [row for row, mode in enumerate(self._modes) if mode.kind == "elastic"]
+        in_band = [row for row in elastic if self._modes[row].number in self._in_band]
+        return next(iter((*in_band, *elastic)), 0)
+
     def data(self, index: _Index, role: int = Qt.ItemDataRole.DisplayRole) -> Any:
         """Return what a row shows or says."""
         mode = self.mode(index.row())

@@ -59,11 +59,11 @@ class ModeRow(QListView):
 
     def show_found(self, solution: Any) -> None:
         """Show the modes of a model, keeping the place of the chosen one; None shows none."""
-        row = max(self.currentIndex().row(), 0)
+        row = self.currentIndex().row()
         self.card.set_model(None if solution is None else _model_of(solution))
         silent = self.blockSignals(True)  # not every step of the exchange is a choice
         self.modes.show_solution(solution, current=True)
-        self.choose(min(row, self.modes.rowCount() - 1))
+        self.choose(min(row, self.modes.rowCount() - 1) if row >= 0 else self.modes.worst_row())
         self.blockSignals(silent)
         self.fit_cards()
 

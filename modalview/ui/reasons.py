@@ -10,11 +10,12 @@ from PySide6.QtWidgets import QFrame, QSizePolicy, QTextBrowser, QVBoxLayout, QW
 from modalview.ui.reasoning import CheckReasoning, Reasoning, reasoning
 from modalview.ui.symbols import verdict_colour
 from modalview.ui.theme import LIGHT, Theme
+from modalview.ui.wording import kept_together
 
 _SIGNS = {"clear": "✓", "clear at nominal only": "!", "mode in band": "✕"}
 _HEADING = '<h4 style="margin:10px 0 3px 0">'
-# Of the height of the place it lies over, and its least width in heights of a line.
-_SHARE, _LEAST_WIDTH = 0.72, 40.0
+# Of the height of the place it lies over; its least width and height in heights of a line.
+_SHARE, _LEAST_WIDTH, _LEAST_HEIGHT = 0.72, 40.0, 24.0
 
 
 class Reasons(QFrame):
@@ -58,7 +59,8 @@ class Reasons(QFrame):
         """Cover the sheet, and the modes in part; more of the place where the sheet is narrow."""
         line = self.fontMetrics().height()
         wide = min(max(drawing.width(), _LEAST_WIDTH * line), place.width() - 1)
-        self.setGeometry(place.left(), place.top(), round(wide), round(_SHARE * place.height()))
+        high = min(max(_SHARE * place.height(), _LEAST_HEIGHT * line), place.height())
+        self.setGeometry(place.left(), place.top(), round(wide), round(high))
 
     def fold(self) -> None:
         """Fold away."""
@@ -119,4 +121,4 @@ def _counts(check: CheckReasoning, theme: Theme) -> str:
 
 
 def _list(lines: tuple[str, ...]) -> str:
-    return "".join(f'<p style="margin:1px 0 1px 22px">{escape(line)}</p>' for line in lines)
+    return "".join(f'<p style="margin:1px 0 1px 22px">{escape(kept_together(line))}</p>' for line in lines)

@@ -1,6 +1,8 @@
+from conftest import settle
 from PySide6.QtCore import QPoint
 from PySide6.QtWidgets import QApplication
 
+from modalview.places import demo_models
 from modalview.ui import settings as names
 from modalview.ui.elided import ElidedLabel
 
@@ -108,3 +110,28 @@ def test_a_line_leaves_out_whole_parts_before_it_cuts_one(qtbot):
     line.resize(line.fontMetrics().horizontalAdvance(line.text()) + 2, 20)
     assert line.shown_text() == line.text()
     assert line.toolTip() == ""
+
+
+def test_the_mode_in_a_band_is_looked_at_first(window, qtbot):
+    train = demo_models() / "3-air-compressor-train" / "as-built.keepclear"
+    window.document.open(train, example=True)
+    settle(qtbot, window)
+    assert window.modes.row.chosen().number == 2
+    assert window.sheet.mode.number == 2
+
+
+def test_the_fields_of_a_machine_end_at_one_line(pump):
+    settled(pump, 1280, 800)
+    (form,) = pump.results._machines.values()
+    ends = {left_edge(pump, field.line) + field.line.width() for field in form.fields.values()}
+    assert len(ends) == 1
+
+
+def test_the_reasoning_covers_the_sheet_and_leaves_the_scale_in_sight(pump):
+    settled(pump, 1280, 800)
+    pump.on_why()
+    settled(pump, 1280, 801)
+    assert left_edge(pump, pump.reasons) + pump.reasons.width() <= left_edge(pump, pump.scale)
+    text = pump.reasons.text.toPlainText()
+    assert text.index("at values") < text.index("modes counted") < text.index("number")
+    pump.on_why()
