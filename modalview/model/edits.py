@@ -4,7 +4,6 @@ A function here reads what a person typed, refuses what the rules refuse, and re
 window wraps it for undo and redo. Applying and reverting never fail and never read the text again.
 """
 
-import math
 from dataclasses import dataclass, replace
 from typing import Any, Protocol
 
@@ -14,6 +13,7 @@ from modalview.model.parts import Model
 from modalview.model.rules import faults
 from modalview.model.tolerance_text import tolerance_text, typed_entry, typed_tolerance
 from modalview.model.values import STARTING, Entry, Tolerance, Value
+from modalview.units.numbers import read_number, split_number
 from modalview.units.show import short
 
 
@@ -153,13 +153,14 @@ def set_number_text(model: Model, address: Address, text: str) -> SetField:
 
 
 def typed_number(text: str) -> float | None:
-    """Read a plain finite number, with a decimal comma where one is meant; None when it is none."""
-    plain = text.strip().replace("\u2212", "-").replace(",", ".")
-    try:
-        number = float(plain)
-    except ValueError:
+    """Read a plain number, with a decimal comma where one is meant; None when it is none.
+
+    UnitError when a comma has two readings, or for a number that floating point cannot hold.
+    """
+    parts = split_number(text.strip().replace("\u2212", "-"))
+    if parts is None or parts[1].strip():
         return None
-    return number if math.isfinite(number) and "_" not in plain else None
+    return float(read_number(parts[0], window=True)[0])
 
 
 def set_plain_text(model: Model, address: Address, text: str) -> SetField:

@@ -183,6 +183,15 @@ def test_functions_for_one_kind_agree_with_the_one_for_all():
     assert set_number_text(SINGLE, order, "3") == set_typed(SINGLE, order, "3")
 
 
+@pytest.mark.parametrize(
+    ("text", "words"),
+    [("1,200", "1,200 can be read as 1.200 or as 1200"), ("1.2.3", "decimal point"), ("3 x", 'like "7"')],
+)
+def test_a_number_is_refused_by_the_rules_of_values(text, words):
+    with pytest.raises(UnitError, match=words):
+        set_typed(SINGLE, ("machines", "pump set", "excitations", "1x", "order"), text)
+
+
 def test_quantities_follow_the_motion():
     assert quantity_of(MODELS["shaft-train"], ("links", "c1", "damping")) == q.TORSIONAL_DAMPING
     assert quantity_of(SINGLE, ("links", "c1", "damping")) == q.DAMPING
