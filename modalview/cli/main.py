@@ -112,7 +112,7 @@ class _Parser(argparse.ArgumentParser):
         if not word.startswith("-"):
             return f"{word!r} is one word too many"
         options = [name for name in self._option_string_actions if name.startswith("--")]
-        close = get_close_matches(word.partition("=")[0], options, n=1)
+        close = get_close_matches(word.partition("=")[0], options, n=1, cutoff=0.7)
         return f"there is no option {word}" + (f" (did you mean {close[0]}?)" if close else "")
 
 

@@ -98,6 +98,8 @@ def either(of_file: Run, of_matrices: Run) -> Run:
             return of_file(words)
         if named:
             raise UsageError("a .keepclear file and --stiffness are two models; name one of them")
+        if getattr(words, "exact", False):
+            raise UsageError("--exact goes with a .keepclear file: entries of matrices are rounded already")
         return of_matrices(words)
 
     return run
@@ -194,7 +196,10 @@ def _machines(words: argparse.Namespace) -> tuple[Machine, ...]:
     )
     broken = faults(Model(machines=(machine,)))
     if broken:
-        raise UsageError("; ".join(f"{_option(fault.path)} {fault.reason}" for fault in broken))
+        ranged = isinstance(speed, SpeedRange)
+        raise UsageError(
+            "; ".join(f"{_option(fault.path, ranged=ranged)} {fault.reason}" for fault in broken)
+        )
     return (machine,)
 
 
@@ -208,11 +213,13 @@ def _check_given(words: argparse.Namespace, speed: Entry | SpeedRange | None) ->
         )
 
 
-def _option(path: str) -> str:
+def _option(path: str, *, ranged: bool) -> str:
     """Return the option that a fault of the machine belongs to."""
     if "excitations[" in path:
         return "--frequencies:" if path.endswith("frequency") else "--orders:"
     key = path.rsplit('" . ', 1)[-1]
+    if key == "speed" and ranged:
+        return "--speed-from and --speed-to:"
     names = {"speed . from": "speed-from", "speed . to": "speed-to", "speed_tolerance": "speed-tolerance"}
     return f"--{names.get(key, key)}"
 
@@ -237,10 +244,13 @@ def _orders(words: argparse.Namespace) -> list[Excitation]:
 
 
 def _frequencies(words: argparse.Namespace) -> list[Excitation]:
-    return [
-        Excitation(id=text, frequency=_entry("frequencies", text, q.FREQUENCY))
-        for text in _listed(words, "frequencies")
-    ]
+    texts = _listed(words, "frequencies")
+    if any(_PLAIN.fullmatch(text) for text in texts):
+        raise UsageError(
+            "--frequencies wants numbers with a unit, parted by commas and with decimal points, such as "
+            f'"99.5 Hz,200 Hz"; found "{words.frequencies}"'
+        )
+    return [Excitation(id=text, frequency=_entry("frequencies", text, q.FREQUENCY)) for text in texts]
 
 
 def _listed(words: argparse.Namespace, name: str) -> Sequence[str]:
@@ -253,7 +263,8 @@ def _share(words: argparse.Namespace, name: str) -> float:
     if entry is None:
         return 0.0
     if not 0 <= entry.si < 1:
-        raise UsageError(f"--{name} is a share from 0 % to below 100 %; found {entry.text!r}")
+        meant = f'; write "{entry.text} %"' if entry.text.strip().isdecimal() and entry.si < 100 else ""
+        raise UsageError(f"--{name} is a share from 0 % to below 100 %; found {entry.text!r}{meant}")
     return entry.si
 
 

@@ -130,6 +130,7 @@ class TestWords:
             (["modes", "a", "b"], "'b' is one word too many; see keepclear modes --help"),
             (["bounds", "--jsn", "a"], "no option --jsn (did you mean --json?); see keepclear bounds --help"),
             (["check", "--stiff", "K.mtx"], "no option --stiff (did you mean --stiffness?)"),
+            (["modes", "a", "--exact"], "no option --exact; see"),
             (["modes", "a", "-x"], "no option -x; see"),
             (["modes", "a", "--count", "2.5"], "--count: wants a whole number, such as 2; found '2.5'"),
             (["picture", "a"], "-o"),

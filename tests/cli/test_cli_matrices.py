@@ -174,6 +174,12 @@ class TestWords:
                 (*PAIR, "--orders", "1", "--speed-from", "20 rpm", "--margin", "5 %"),
                 "a speed range has both ends",
             ),
+            ((*PAIR, "--frequencies", "1,5 Hz", "--margin", "5 %"), "with decimal points, such as"),
+            (
+                (*PAIR, "--orders", "1", "--speed-from", "3 Hz", "--speed-to", "2 Hz", "--margin", "5 %"),
+                "--speed-from and --speed-to: must rise",
+            ),
+            ((*PAIR, "--tolerance-k", "10"), """found '10'; write "10 %\""""),
             ((*PAIR, "--frequencies", "20", "--margin", "5 %"), "--frequencies"),
             ((*PAIR, "--frequencies", "0 Hz", "--margin", "5 %"), "--frequencies: must be above zero"),
             ((*PAIR, "--tolerance-k", "100 %"), "--tolerance-k is a share from 0 % to below 100 %"),
@@ -197,6 +203,11 @@ class TestWords:
         code, out, err = run(capsys, "modes", *words)
         assert (code, out) == (2, "")
         assert says in err
+
+    def test_exact_is_not_promised_for_matrices(self, capsys):
+        code, out, err = run(capsys, "check", *PAIR, "--exact", "--frequencies", "1 Hz", "--margin", "1 %")
+        assert (code, out) == (2, "")
+        assert "--exact goes with a .keepclear file" in err
 
     def test_nothing_to_check_names_the_options(self, capsys):
         code, out, err = run(capsys, "check", *PAIR)
