@@ -23,7 +23,7 @@ from modalview.model.parts import (
     SpeedRange,
     Spring,
 )
-from modalview.model.typed_machines import typed_direction, typed_margin, typed_speed
+from modalview.model.typed_machines import typed_direction, typed_margin, typed_rate, typed_speed
 from modalview.model.values import Entry
 from modalview.units.show import short
 
@@ -115,6 +115,13 @@ def _teeth(text: str) -> tuple[int, int]:
     return int(match[1]), int(match[2])
 
 
+def _order(text: str) -> float:
+    rate = typed_rate(text)
+    if rate.order is None:
+        raise UnitError(f'"{text}" is a fixed frequency; an order is a number such as "1" or "0.5x"')
+    return rate.order
+
+
 def _words(text: str) -> tuple[str, ...]:
     return tuple(re.split(r"[\s,;]+", text))
 
@@ -127,6 +134,7 @@ _FORMS: dict[tuple[type, str], _Form] = {
     (Machine, "speed"): _Form(_speed_text, typed_speed),
     (Machine, "margin"): _MARGIN,
     (Excitation, "margin"): _MARGIN,
+    (Excitation, "order"): _Form(lambda order: short(order, 15), _order),
     (Excitation, "direction"): _DIRECTION,
     (Excitation, "axis"): _VECTOR,
     (Spring, "direction"): _DIRECTION,
