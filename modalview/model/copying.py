@@ -5,7 +5,7 @@ from dataclasses import replace
 from typing import Any
 
 from modalview.errors import InputError
-from modalview.model.ids import LISTS, free_id, ids_of
+from modalview.model.ids import LISTS, ids_of
 from modalview.model.moving import moved
 from modalview.model.parts import (
     End,
@@ -119,14 +119,15 @@ def pasted(model: Model, piece: Model, step: Sequence[float]) -> tuple[Model, tu
     chosen = {body.id for body in piece.bodies} | {support.id for support in piece.supports}
     shifted = moved(piece, chosen, step)
     own = replace(shifted, load_cases=())
-    names = _fresh_names(own, model)
+    namer = _Namer(model)
+    names = {part.id: namer.fresh(part.id) for name in LISTS for part in getattr(own, name)}
     copy = _renamed(own, names)
     lists: dict[str, Any] = {
         name: (*getattr(model, name), *getattr(copy, name)) for name in LISTS if getattr(copy, name)
     }
     if piece.load_cases:
         cases = tuple(_case_renamed(one, names) for one in piece.load_cases)
-        lists["load_cases"] = _cases_joined(model, cases, {*ids_of(model), *names.values()})
+        lists["load_cases"] = _cases_joined(model, cases, namer)
     return replace(model, **lists), tuple(names.values())
 
 
@@ -151,36 +152,30 @@ def duplicated(model: Model, ids: Collection[str], step: Sequence[float]) -> tup
     new: tuple[str, ...] = ()
     if not alone or any(getattr(piece, name) for name in LISTS):
         model, new = pasted(model, piece, step)
-    taken = set(ids_of(model))
-    copies: list[Link] = []
-    for link in alone:
-        copies.append(replace(link, id=_fresh(link.id, taken)))
-        taken.add(copies[-1].id)
+    namer = _Namer(model)
+    copies: list[Link] = [replace(link, id=namer.fresh(link.id)) for link in alone]
     return replace(model, links=(*model.links, *copies)), (*new, *(link.id for link in copies))
 
 
-def _fresh_names(piece: Model, model: Model) -> dict[str, str]:
-    """Return the new id of every part of a fragment, those that are free unchanged."""
-    taken = set(ids_of(model))
-    names: dict[str, str] = {}
-    for name in LISTS:
-        for part in getattr(piece, name):
-            names[part.id] = _fresh(part.id, taken)
-            taken.add(names[part.id])
-    return names
+class _Namer:
+    """Gives ids that a model does not hold yet, each once."""
 
+    def __init__(self, model: Model) -> None:
+        self._taken = set(ids_of(model))
+        self._next: dict[str, int] = {}  # lower numbers are known to be taken
 
-def _fresh(name: str, taken: Collection[str]) -> str:
-    """Return an id like another: "k1" becomes "k2", "motor" becomes "motor 2".
-
-    >>> _fresh("k1", {"k1", "k2"}), _fresh("motor", {"motor"}), _fresh("pump", {"motor"})
-    ('k3', 'motor 2', 'pump')
-    """
-    if name not in taken:
+    def fresh(self, name: str) -> str:
+        """Return an id like another: "k1" becomes "k2", "motor" becomes "motor 2"; a free one stays."""
+        if name in self._taken:
+            stem = name.rstrip(DIGITS)
+            stem = f"{name} " if stem == name else stem
+            number = self._next.get(stem, 2 if stem.endswith(" ") else 1)
+            while f"{stem}{number}" in self._taken:
+                number += 1
+            self._next[stem] = number + 1
+            name = f"{stem}{number}"
+        self._taken.add(name)
         return name
-    stem = name.rstrip(DIGITS)
-    stem = f"{name} " if stem == name else stem
-    return free_id(stem, taken, first=2 if stem.endswith(" ") else 1)
 
 
 def _renamed(piece: Model, names: Mapping[str, str]) -> Model:
@@ -230,7 +225,7 @@ def _case_renamed(case: LoadCase, names: Mapping[str, str]) -> LoadCase:
     )
 
 
-def _cases_joined(model: Model, cases: Sequence[LoadCase], taken: set[str]) -> tuple[LoadCase, ...]:
+def _cases_joined(model: Model, cases: Sequence[LoadCase], namer: _Namer) -> tuple[LoadCase, ...]:
     """Return the model's load cases with pasted changes in the case of the same id, others after them."""
     mine = {case.id: case for case in model.load_cases}
     for case in cases:
@@ -238,7 +233,6 @@ def _cases_joined(model: Model, cases: Sequence[LoadCase], taken: set[str]) -> t
         if old is not None:
             mine[case.id] = replace(old, changes=(*old.changes, *case.changes))
         else:
-            fresh = _fresh(case.id, taken)
-            taken.add(fresh)
+            fresh = namer.fresh(case.id)
             mine[fresh] = replace(case, id=fresh)
     return tuple(mine.values())
