@@ -77,10 +77,29 @@ def test_functions_of_developers_md_stand_where_it_says():
     assert wrong == []
 
 
-@pytest.mark.parametrize("command", ["check", "bounds", "modes"])
-def test_every_key_of_the_documents_is_told(command, capsys):
-    model = ROOT / "demo_models/1-cooling-water-pump/as-built.keepclear"
-    main([command, "--json", str(model)])
+PUMP = ("demo_models/1-cooling-water-pump/as-built.keepclear",)
+DAMPED = ("demo_models/6-vacuum-pump-absorber/absorber-210kg-damped.keepclear",)
+MATRICES = ("--stiffness", "tests/data/mikota_20/K.mtx", "--mass", "tests/data/mikota_20/M.mtx")
+BAND = ("--frequencies", "1 Hz", "--margin", "3 %")
+
+
+@pytest.mark.parametrize(
+    "words",
+    [
+        *(
+            (command, *what)
+            for command in ("check", "bounds", "modes")
+            for what in (PUMP, DAMPED, (*MATRICES, *BAND))
+        ),
+        ("check", *PUMP, "not-there.keepclear"),
+        ("check", *PUMP, "--exact"),
+        ("modes", *PUMP, "--near", "50 Hz", "--count", "1"),
+        ("modes", *MATRICES, "--near", "1 Hz", "--count", "1"),
+    ],
+)
+def test_every_key_of_the_documents_is_told(words, capsys, monkeypatch):
+    monkeypatch.chdir(ROOT)
+    main([*words, "--json"])
     document = json.loads(capsys.readouterr().out)
     told = set(re.findall(r"`(\w+)`", README.partition("## JSON\n")[2].partition("\n## ")[0]))
     assert {key for key in _keys(document) if key not in told} == set()
