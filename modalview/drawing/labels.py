@@ -47,16 +47,20 @@ class Owner:
         x1, y1, x2, y2 of its own part.
     others : array (n, 4)
         Of the other parts of the same kind.
+    also : Owner or None
+        A second condition: of two arrows on one body the text stands nearer to its own.
     """
 
     own: Floats
     others: Floats
+    also: "Owner | None" = None
 
     def owns(self, boxes: Floats) -> Truths:
         """Return which of the boxes (k, 4) stand nearer to the own part than to any other."""
+        also = np.ones(len(boxes), dtype=bool) if self.also is None else self.also.owns(boxes)
         if not len(self.others):
-            return np.ones(len(boxes), dtype=bool)
-        return np.asarray(_distance(boxes, self.own) <= _distance(boxes, self.others))
+            return also
+        return np.asarray(also & (_distance(boxes, self.own) <= _distance(boxes, self.others)))
 
 
 def _distance(boxes: Floats, parts: Floats) -> Floats:

@@ -233,10 +233,8 @@ def _by_disc(geometry: SheetGeometry, number: int) -> list[Spot]:
 def _name_pushes(
     geometry: SheetGeometry, acting: tuple[Push, ...], boards: tuple[Board, Board], letters: _Letters
 ) -> None:
-    boxes = np.vstack([np.zeros((0, 4)), *(push.box for push in acting)])
     for number, push in enumerate(acting):
-        others = np.vstack([np.delete(boxes, number, axis=0), np.delete(geometry.boxes, push.body, axis=0)])
-        owner = Owner(np.vstack([push.box, geometry.boxes[push.body]]), others)
+        owner = _owner_of_push(geometry, acting, number)
         lines = tuple(Line(text, Role.WARN) for text in push.texts)
         small = tuple(replace(line, size=Size.SMALL) for line in lines)
         names = [text.partition(",")[0] for text in push.texts]
@@ -256,6 +254,16 @@ def _name_pushes(
         letters.body_labels += [(push.body, text) for text in placed]
         if not placed:
             letters.unlabelled.append(push.texts[0])
+
+
+def _owner_of_push(geometry: SheetGeometry, acting: tuple[Push, ...], number: int) -> Owner:
+    """Return an arrow with its body among other arrows and bodies, and among those on the same body."""
+    push, nothing = acting[number], np.zeros((0, 4))
+    rest = [other for other in acting if other is not push]
+    same = np.vstack([nothing, *(other.box for other in rest if other.body == push.body)])
+    apart = [other.box for other in rest if other.body != push.body]
+    others = np.vstack([*apart, np.delete(geometry.boxes, push.body, axis=0)])
+    return Owner(np.vstack([push.box, geometry.boxes[push.body]]), others, Owner(push.box, same))
 
 
 @dataclass(frozen=True, slots=True)

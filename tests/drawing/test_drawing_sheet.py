@@ -3,6 +3,7 @@ from dataclasses import replace
 import numpy as np
 import pytest
 
+from modalview.drawing.excitations import pushes
 from modalview.drawing.furniture import MARGIN, title_block, title_lines, title_size
 from modalview.drawing.labels import extent
 from modalview.drawing.lettering import USUAL
@@ -87,6 +88,19 @@ def test_each_arrow_has_its_own_text_beside_it_on_a_low_sheet():
     for name, own, other in (("1× unbalance", motor, pump), ("7× vane pass", pump, motor)):
         place = extent([texts[name]], 1.0)
         assert _apart(place, tuple(own)) < _apart(place, tuple(other))
+
+
+@pytest.mark.parametrize("size", [(660.0, 430.0), (720.0, 540.0), (1130.0, 640.0)])
+def test_of_two_arrows_on_one_body_each_text_stands_nearer_to_its_own(size: tuple[float, float]):
+    model = read_model(demo_models() / "4-standby-generator-set" / "dynamic-stiffness.keepclear")
+    geometry = sheet_geometry(model, *size)
+    acting = pushes(geometry)
+    assert len(acting) == 2
+    for push, other in (acting, acting[::-1]):
+        head = push.texts[0].partition(",")[0]
+        label = next(text for _, text in geometry.body_labels if text.text.startswith(head))
+        place = extent([label], 1.0)
+        assert _apart(place, tuple(push.box[0])) <= _apart(place, tuple(other.box[0]))
 
 
 def test_what_moves_with_a_body_stays_off_the_title_block():
