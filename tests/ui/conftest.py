@@ -7,7 +7,7 @@ os.environ["QT_QPA_PLATFORM"] = "offscreen"
 from pathlib import Path
 
 import pytest
-from PySide6.QtCore import QSettings, QtMsgType
+from PySide6.QtCore import QEvent, QSettings, QtMsgType
 from PySide6.QtWidgets import QApplication
 
 from modalview.places import demo_models
@@ -72,6 +72,8 @@ def make_window(qapp, settings):
         window.deleteLater()
         assert worker._thread.isFinished()
     QApplication.processEvents()
+    # Widgets left behind would be dressed anew with every window that follows.
+    QApplication.sendPostedEvents(None, QEvent.Type.DeferredDelete)
 
 
 @pytest.fixture

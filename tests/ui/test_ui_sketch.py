@@ -1,0 +1,333 @@
+"""Drawing on the sheet: each tool, moving, sizing, choosing, numbers typed over, undo of all of it."""
+
+import pytest
+from conftest import FAN, settle
+from pen import Pen
+from PySide6.QtCore import QPoint, Qt
+from PySide6.QtGui import QGuiApplication
+from PySide6.QtWidgets import QApplication
+
+from modalview.model.parts import Model, Motion
+from modalview.model.values import STARTING
+
+SHIFT, CTRL, ALT = (
+    Qt.KeyboardModifier.ShiftModifier,
+    Qt.KeyboardModifier.ControlModifier,
+    Qt.KeyboardModifier.AltModifier,
+)
+
+
+@pytest.fixture
+def sketch(window, qtbot):
+    """An empty sheet of a single axis, with a pen over it."""
+    window.document.start(Model(motion=Motion.SINGLE_AXIS))
+    window.activateWindow()
+    window.sheet.setFocus()
+    return Pen(window, qtbot)
+
+
+@pytest.fixture
+def plane(window, qtbot):
+    """An empty sheet of a plane."""
+    window.document.start(Model(motion=Motion.PLANE))
+    window.activateWindow()
+    window.sheet.setFocus()
+    return Pen(window, qtbot)
+
+
+def model(pen) -> Model:
+    return pen.window.document.model
+
+
+def place(part):
+    return [one.si for one in part.position]
+
+
+def hint(pen):
+    return pen.window.sketching.hand.hint
+
+
+def test_a_mass_is_drawn_as_large_as_it_is_dragged_and_its_value_asked_for(sketch):
+    sketch.tool("M")
+    sketch.drag(sketch.at(-0.5, 1.0), sketch.at(0.5, 1.4))
+    (body,) = model(sketch).bodies
+    assert (body.drawn.width.si, body.drawn.height.si) == (1.0, 0.4)
+    assert place(body) == pytest.approx([0.0, 1.2])
+    assert body.mass.source == STARTING
+    sketch.type("620 kg", "3 %", "motor")
+    (body,) = model(sketch).bodies
+    assert (body.mass.text, body.name) == ("620 kg", "motor")
+    assert body.mass.tolerance.both.text == "3 %"
+    assert body.mass.source is None
+    assert QApplication.focusWidget() is sketch.sheet
+
+
+def test_a_click_puts_a_mass_of_the_usual_size(sketch):
+    sketch.tool("m")
+    sketch.click(sketch.at(0.0, 0.5))
+    (body,) = model(sketch).bodies
+    assert place(body) == [0.0, 0.5]
+    assert body.drawn.width.si > body.drawn.height.si > 0
+    assert sketch.window.sketching.hand.kind.name == "choose"
+
+
+def test_escape_leaves_off_first_the_drag_then_the_tool_then_what_is_chosen(sketch):
+    sketch.tool("M")
+    sketch.drag(sketch.at(-0.5, 1.0), sketch.at(0.5, 1.4), let_go=False)
+    sketch.key(Qt.Key.Key_Escape)
+    sketch.let_go(sketch.at(0.5, 1.4))
+    assert model(sketch).bodies == ()
+    assert sketch.window.sketching.hand.kind.name == "mass"
+    sketch.key(Qt.Key.Key_Escape)
+    assert sketch.window.sketching.hand.kind.name == "choose"
+
+
+def test_numbers_typed_over_a_drag_hold_whatever_the_pointer_does(sketch):
+    sketch.tool("M")
+    sketch.drag(sketch.at(-0.5, 1.0), sketch.at(0.5, 1.4), let_go=False)
+    sketch.key(Qt.Key.Key_8)
+    sketch.type_on("50 mm")
+    sketch.let_go(sketch.at(0.9, 1.9))
+    assert model(sketch).bodies == ()  # still being typed
+    sketch.key(Qt.Key.Key_Return)
+    (body,) = model(sketch).bodies
+    assert body.drawn.width.text == "0.85 m"
+
+
+def two_masses(pen):
+    for x, name in ((-1.0, "left"), (1.0, "right")):
+        pen.tool("M")
+        pen.click(pen.at(x, 1.0))
+        pen.type("100 kg", "", name)
+
+
+def test_a_spring_joins_two_bodies_and_one_to_the_ground_makes_its_support(sketch):
+    two_masses(sketch)
+    sketch.tool("S")
+    sketch.drag(sketch.part("left"), sketch.part("right"))
+    sketch.type("4.0e8 N/m", "10 %", "")
+    sketch.tool("S")
+    sketch.drag(sketch.part("left", down=0.9), sketch.at(-1.0, -0.5))
+    sketch.key(Qt.Key.Key_Escape)
+    first, second = model(sketch).links
+    assert (first.from_.body, first.to.body) == tuple(body.id for body in model(sketch).bodies)
+    assert first.stiffness.text == "4.0e8 N/m"
+    (support,) = model(sketch).supports
+    assert second.to.support == support.id
+
+
+def test_a_link_may_be_made_by_two_clicks(sketch):
+    two_masses(sketch)
+    sketch.tool("S")
+    sketch.click(sketch.part("left"))
+    sketch.click(sketch.part("right"))
+    assert len(model(sketch).links) == 1
+
+
+def test_what_cannot_be_joined_says_why_and_changes_nothing(sketch):
+    two_masses(sketch)
+    before = model(sketch)
+    sketch.tool("S")
+    sketch.drag(sketch.at(-1.0, -1.0), sketch.at(1.0, -1.0))
+    assert "needs a body that moves" in hint(sketch)
+    sketch.tool("L")
+    sketch.drag(sketch.part("left"), sketch.at(0.0, -1.0))
+    assert "joins two bodies" in hint(sketch)
+    sketch.key(Qt.Key.Key_Escape)
+    sketch.tool("S")
+    sketch.drag(sketch.part("left", 0.1), sketch.part("left", 0.9))
+    assert "both ends are on left" in hint(sketch)
+    assert model(sketch) is before
+
+
+def test_a_tool_without_a_meaning_in_the_motion_is_absent(sketch):
+    sketch.tool("E")
+    assert sketch.window.sketching.hand.kind.name == "choose"
+    assert sketch.window.palette_of_tools.buttons["beam"].isHidden()
+    assert not sketch.window.palette_of_tools.buttons["spring"].isHidden()
+
+
+def test_a_tool_taken_with_shift_stays_in_hand(sketch):
+    sketch.key(Qt.Key.Key_M, SHIFT)
+    sketch.window.sketching.hand.take("mass", locked=True)
+    sketch.click(sketch.at(-1.0, 1.0))
+    sketch.sheet.setFocus()
+    sketch.click(sketch.at(1.0, 1.0))
+    assert len(model(sketch).bodies) == 2
+
+
+def test_a_body_is_moved_by_dragging_and_takes_one_step_to_undo(sketch):
+    two_masses(sketch)
+    before = model(sketch)
+    sketch.drag(sketch.part("left"), sketch.part("left") + QPoint(0, -100))
+    assert place(model(sketch).bodies[0]) == pytest.approx([-1.0, 2.0])
+    sketch.window.document.stack.undo()
+    assert model(sketch) == before
+
+
+def test_escape_gives_back_what_was_dragged(sketch):
+    two_masses(sketch)
+    before, steps = model(sketch), sketch.window.document.stack.count()
+    sketch.drag(sketch.part("left"), sketch.at(0.0, 2.0), let_go=False)
+    assert model(sketch) != before
+    sketch.key(Qt.Key.Key_Escape)
+    sketch.let_go(sketch.at(0.0, 2.0))
+    assert model(sketch) == before
+    assert sketch.window.document.stack.count() == steps
+
+
+def test_arrow_keys_nudge_and_nudges_are_one_step(sketch):
+    two_masses(sketch)
+    sketch.click(sketch.part("left"))
+    before, steps = model(sketch), sketch.window.document.stack.count()
+    for _ in range(3):
+        sketch.key(Qt.Key.Key_Right)
+    sketch.key(Qt.Key.Key_Up, SHIFT)
+    assert place(model(sketch).bodies[0]) == pytest.approx([-0.7, 2.0])
+    assert sketch.window.document.stack.count() == steps + 1
+    sketch.window.document.stack.undo()
+    assert model(sketch) == before
+
+
+def test_a_handle_sizes_a_body_about_its_centre_without_changing_a_number(sketch):
+    sketch.tool("M")
+    sketch.drag(sketch.at(-0.5, 1.0), sketch.at(0.5, 1.4))
+    sketch.key(Qt.Key.Key_Escape)
+    sketch.click(sketch.at(0.0, 1.2))
+    grip = sketch.part("m1", 1.0, 0.5) + QPoint(5, 0)
+    sketch.drag(grip, grip + QPoint(50, 0))
+    (body,) = model(sketch).bodies
+    assert body.drawn.width.si == pytest.approx(2.1)
+    assert place(body) == pytest.approx([0.0, 1.2])
+    assert body.drawn.height.si == 0.4
+
+
+def test_the_end_of_a_link_is_led_elsewhere(sketch):
+    two_masses(sketch)
+    sketch.tool("S")
+    sketch.drag(sketch.part("left", down=0.9), sketch.at(-1.0, -0.5))
+    sketch.key(Qt.Key.Key_Escape)
+    link = model(sketch).links[0]
+    assert sketch.window.sketching.hand.chosen == (link.id,)
+    foot = sketch.laid_out().link_ends[0, 1].tolist()
+    sketch.drag(QPoint(round(foot[0]), round(foot[1])), sketch.part("right"))
+    assert model(sketch).links[0].to.body == "m2"
+
+
+def test_a_rubber_band_chooses_what_lies_inside_and_ctrl_adds(sketch):
+    two_masses(sketch)
+    hand = sketch.window.sketching.hand
+    sketch.drag(sketch.at(-2.0, 1.8), sketch.at(0.0, 0.2))
+    assert hand.chosen == ("m1",)
+    sketch.click(sketch.part("right"), CTRL)
+    assert hand.chosen == ("m1", "m2")
+    sketch.click(sketch.at(0.0, 2.0))
+    assert hand.chosen == ()
+
+
+def test_delete_takes_what_hangs_on_a_body_with_it(sketch):
+    two_masses(sketch)
+    sketch.tool("S")
+    sketch.drag(sketch.part("left"), sketch.part("right"))
+    sketch.key(Qt.Key.Key_Escape)
+    sketch.click(sketch.part("left"))
+    sketch.key(Qt.Key.Key_Delete)
+    assert [body.id for body in model(sketch).bodies] == ["m2"]
+    assert model(sketch).links == ()
+    sketch.window.document.stack.undo()
+    assert len(model(sketch).links) == 1
+
+
+def test_parts_are_copied_and_pasted_also_into_another_window(sketch, make_window, qtbot):
+    two_masses(sketch)
+    sketch.key(Qt.Key.Key_A, CTRL)
+    sketch.key(Qt.Key.Key_C, CTRL)
+    sketch.key(Qt.Key.Key_V, CTRL)
+    assert len(model(sketch).bodies) == 4
+    assert len({body.id for body in model(sketch).bodies}) == 4
+    other = make_window()
+    other.document.start(Model(motion=Motion.SINGLE_AXIS))
+    pen = Pen(other, qtbot)
+    pen.laid_out()
+    other.sketching.editing.paste()
+    assert [body.name for body in other.document.model.bodies] == ["left", "right"]
+
+
+def test_what_is_no_part_on_the_clipboard_is_told(sketch):
+    sketch.laid_out()
+    QGuiApplication.clipboard().setText("hello")
+    sketch.window.sketching.editing.paste()
+    assert "cannot be pasted" in hint(sketch)
+
+
+def test_the_cross_of_the_keyboard_draws_too(sketch):
+    sketch.laid_out()
+    sketch.tool("M")
+    sketch.key(Qt.Key.Key_Up, SHIFT)
+    sketch.key(Qt.Key.Key_Return)
+    sketch.type("200 kg", "", "machine")
+    sketch.tool("S")
+    sketch.key(Qt.Key.Key_PageDown)
+    assert hint(sketch) == "The cross is on machine"
+    sketch.key(Qt.Key.Key_Return)
+    for _ in range(2):
+        sketch.key(Qt.Key.Key_Down, SHIFT)
+    sketch.key(Qt.Key.Key_Return)
+    (link,) = model(sketch).links
+    assert link.from_.body == "m1"
+    assert link.to.support == model(sketch).supports[0].id
+
+
+def test_alignment_and_mirror_from_the_menu_keep_the_frequencies(window, qtbot):
+    window.document.open(FAN, example=True)
+    settle(qtbot, window)
+    before = [mode.frequency_hz for mode in window.analysis.solution.modes]
+    editing = window.sketching.editing
+    editing.choose_all()
+    for change in (editing.mirror_sideways, editing.turn_left, editing.turn_right):
+        change()
+        settle(qtbot, window)
+        after = [mode.frequency_hz for mode in window.analysis.solution.modes]
+        assert after == pytest.approx(before, rel=1e-9)
+
+
+def test_a_body_moved_in_a_plane_changes_the_verdict_as_it_goes(plane, qtbot):
+    plane.tool("B")
+    plane.drag(plane.at(-0.8, 0.4), plane.at(0.8, 1.2))
+    plane.key(Qt.Key.Key_Escape)
+    for x in (-0.6, 0.6):
+        plane.tool("T")
+        plane.drag(plane.at(x, 0.45), plane.at(x, -0.4))
+        plane.key(Qt.Key.Key_Escape)
+    window = plane.window
+    settle(qtbot, window)
+    first = window.analysis.outlook
+    assert first.verdict is None
+    plane.drag(plane.part("b1", 0.3, 0.3), plane.part("b1", 0.3, 0.3) + QPoint(0, -40), let_go=False)
+    settle(qtbot, window)
+    assert window.analysis.outlook is not first
+    plane.let_go(plane.part("b1", 0.3, 0.3))
+
+
+def test_a_double_click_asks_for_the_values_of_a_part(sketch):
+    two_masses(sketch)
+    where = sketch.part("right")
+    sketch.double_click(where)
+    sketch.type("750 kg")
+    assert model(sketch).bodies[1].mass.text == "750 kg"
+
+
+def test_find_shows_the_part_that_is_named(sketch):
+    two_masses(sketch)
+    sketch.window.sketching.editing.find()
+    dialog = sketch.window.sheet.findChild(type_of_find())
+    dialog.line.setText("righ")
+    assert dialog.list.count() == 1
+    sketch.key_on(dialog.line, Qt.Key.Key_Return)
+    assert sketch.window.sketching.hand.chosen == ("m2",)
+
+
+def type_of_find():
+    from modalview.ui.sketch.asking import FindPart
+
+    return FindPart
