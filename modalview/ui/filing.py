@@ -172,7 +172,8 @@ class Filing(QObject):
         more = len(error.faults) - len(lines)
         text = "\n".join([*lines, f"and {more} more" if more > 0 else ""]).strip()
         if then is None or self.put_aside is None:
-            ask(self._window, "The model was not saved: it breaks rules.", text, (("Close", None),))
+            kept = "\n\nUntil it can be saved a recovery copy is kept." if self.put_aside else ""
+            ask(self._window, "The model was not saved: it breaks rules.", text + kept, (("Close", None),))
             return
 
         def keep() -> None:

@@ -18,8 +18,8 @@ from modalview.ui.filing import Filing
 
 # Programs that save by deleting and renaming leave no file for a moment; nothing is told before it is over.
 SETTLE_MS = 300
-# Comparing is quadratic in the worst case; a table of thousands of lines is better compared elsewhere.
-MOST_LINES = 5000
+# Beyond these lines comparing can take seconds, and nobody reads what comes of it.
+MOST_LINES = 10_000
 
 
 class State(Enum):

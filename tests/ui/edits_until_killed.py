@@ -1,6 +1,7 @@
 """The window, edited and saved at random until it is killed; run by test_ui_crash.
 
-Says "ready", then one line for each edit: its number and the time before it was made.
+Says "ready", then one line for each edit, its number and the time before it was made, and "kept" for each
+recovery file.
 """
 
 import os
@@ -28,6 +29,7 @@ def main(file: str, folder: str, seed: str, interval_ms: str, save_share: str) -
     windows = Windows(Settings(store), session, autosave_ms=int(interval_ms))
     window = windows.add_shown()
     window.document.open(Path(file))
+    window.autosave.kept.connect(lambda: _say("kept"))
     made = 0
 
     def edit() -> None:

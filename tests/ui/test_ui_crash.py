@@ -31,6 +31,7 @@ class Run:
     folder: Path
     process: subprocess.Popen
     lives_s: float
+    saves: bool
 
     @property
     def file(self) -> Path:
@@ -46,9 +47,7 @@ def started(folder: Path, seed: int, *, saves: bool) -> Run:
     words += [str(round(1000 * INTERVAL_S)), str(share)]
     environment = {**os.environ, "QT_QPA_PLATFORM": "offscreen", FOLDER_VARIABLE: str(folder)}
     process = subprocess.Popen(words, stdout=subprocess.PIPE, env=environment)  # noqa: S603  (our own words)
-    # Without saves it lives long enough for a recovery file to be there for certain.
-    least = 0.0 if saves else INTERVAL_S + WRITE_S
-    return Run(folder, process, least + chance.uniform(0.0, 3 * INTERVAL_S))
+    return Run(folder, process, chance.uniform(0.0, 4 * INTERVAL_S), saves)
 
 
 def number(model) -> int:
@@ -59,12 +58,17 @@ def number(model) -> int:
 
 def killed(run: Run) -> bool:
     """Kill a window, check what is left, and return whether a recovery was offered."""
-    assert run.process.stdout.readline() == b"ready\n"
+    said = b""
+    # Without saves it lives until a recovery file is there for certain, and then as long as the others.
+    while not said.endswith(b"ready\n" if run.saves else b"kept\n"):
+        line = run.process.stdout.readline()
+        assert line, "it ended by itself"
+        said += line
     with pytest.raises(subprocess.TimeoutExpired):
         run.process.wait(run.lives_s)
     run.process.kill()
     at = time.monotonic()
-    lines = run.process.stdout.read().decode().splitlines()
+    lines = (said + run.process.stdout.read()).decode().splitlines()
     run.process.wait()
     run.process.stdout.close()
     edits = {int(words[0]): float(words[1]) for words in (line.split() for line in lines) if len(words) == 2}
