@@ -22,6 +22,7 @@ INTERVAL_S = 0.25
 # A recovery file is written in a few hundredths of a second; a busy machine takes longer.
 WRITE_S = 0.35
 AT_ONCE = 5
+PATIENCE_S = 40.0
 
 
 @dataclass
@@ -59,10 +60,12 @@ def number(model) -> int:
 def killed(run: Run) -> bool:
     """Kill a window, check what is left, and return whether a recovery was offered."""
     said = b""
+    patience = time.monotonic() + PATIENCE_S
     # Without saves it lives until a recovery file is there for certain, and then as long as the others.
     while not said.endswith(b"ready\n" if run.saves else b"kept\n"):
         line = run.process.stdout.readline()
         assert line, "it ended by itself"
+        assert time.monotonic() < patience, "no recovery file was written"
         said += line
     with pytest.raises(subprocess.TimeoutExpired):
         run.process.wait(run.lives_s)
