@@ -67,6 +67,7 @@ MENUS: dict[str, tuple[Item, ...]] = {
         Item("Choose all of the same &kind", "sketching.editing.choose_alike", "Ctrl+K"),
         Item("&Find a part…", "sketching.editing.find", _KEYS.Find),
         Item("&Type values", "sketching.ask_chosen", "Ctrl+T"),
+        Item("Add an &order or frequency…", "sketching.add_force", "Ctrl+Shift+F"),
         SEPARATOR,
         Item("&Mirror left and right", "sketching.editing.mirror_sideways"),
         Item("Mirror a&bove and below", "sketching.editing.mirror_upright"),
@@ -145,7 +146,7 @@ class Menus:
             for one in item.inner:
                 self._add(inner, one, window)
         elif "." in item.do:  # a place in the window, which comes after its menus
-            self._add_action(menu, item, lambda: attrgetter(item.do)(window)())
+            self._add_action(menu, item, _when_asked(window, item.do))
         elif hasattr(window, item.do):
             self._add_action(menu, item, getattr(window, item.do))
         else:
@@ -171,6 +172,15 @@ class Menus:
         action.setShortcuts(item.key)
         menu.addAction(action)
         self.actions[item.do] = action
+
+
+def _when_asked(window: QMainWindow, name: str) -> Callable[[], object]:
+    """Return what does what a place in the window is named to do, looked up when it is asked for."""
+
+    def do() -> object:
+        return attrgetter(name)(window)()
+
+    return do
 
 
 def keyboard_text() -> str:

@@ -2,8 +2,8 @@
 
 from typing import Any
 
-from PySide6.QtCore import Qt
-from PySide6.QtWidgets import QFrame, QLabel, QScrollArea, QSizePolicy, QVBoxLayout, QWidget
+from PySide6.QtCore import Qt, Signal
+from PySide6.QtWidgets import QFrame, QLabel, QPushButton, QScrollArea, QSizePolicy, QVBoxLayout, QWidget
 
 from modalview.model.parts import Machine, Model
 from modalview.ui.analysis import Analysis
@@ -13,6 +13,11 @@ from modalview.ui.doubts import Doubts
 from modalview.ui.entry import EntryField
 from modalview.ui.theme import LIGHT, Theme
 from modalview.ui.values import ValueRow, machine_rows
+
+_NO_MACHINE = (
+    "Nothing is checked yet: no machine runs here. Take the tool F and click on a body where an order of a "
+    "machine's speed, or a fixed frequency, acts; give its speed and the margin wanted."
+)
 
 
 def _heading(text: str, parent: QWidget) -> QLabel:
@@ -59,6 +64,8 @@ class MachineForm(QFrame):
 class Results(QScrollArea):
     """The column; a long one scrolls."""
 
+    force_asked = Signal()
+
     def __init__(self, document: Document, analysis: Analysis, parent: QWidget | None = None) -> None:
         super().__init__(parent)
         self._document, self._analysis = document, analysis
@@ -79,6 +86,15 @@ class Results(QScrollArea):
         self._heading = _heading("Orders checked", self._inside)
         self._column.addWidget(self._heading)
         self._checks = self._part()
+        self.none_yet = QLabel(_NO_MACHINE, self._inside)
+        self.none_yet.setWordWrap(True)
+        self.none_yet.setProperty("role", "small")
+        self._column.addWidget(self.none_yet)
+        self.add = QPushButton("Add an order or frequency…", self._inside)
+        self.add.setSizePolicy(QSizePolicy.Policy.Fixed, QSizePolicy.Policy.Fixed)
+        self.add.setToolTip("Ask what acts on the chosen body; the tool F asks at any place on a body.")
+        self.add.clicked.connect(self.force_asked)
+        self._column.addWidget(self.add)
         self.doubts = Doubts(self._inside)
         self._column.addWidget(self.doubts)
         self.not_checked = self._words("Not checked")
@@ -121,6 +137,7 @@ class Results(QScrollArea):
                 form = self._machines[machine.id] = MachineForm(machine, self._document, self._inside)
                 self._forms.addWidget(form)
             self._machines[machine.id].show_rows(machine_rows(model, machine, system))
+        self.none_yet.setVisible(not any(machine.excitations for machine in model.machines))
         _say(self.story, (model.notes,) if model.notes else ())
 
     def forget_machines(self) -> None:

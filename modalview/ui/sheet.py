@@ -5,8 +5,17 @@ from functools import partial
 from time import perf_counter
 from typing import Any
 
-from PySide6.QtCore import QPoint, QPointF, Qt, QTimer, Signal
-from PySide6.QtGui import QKeyEvent, QMouseEvent, QPainter, QPaintEvent, QPixmap, QResizeEvent, QWheelEvent
+from PySide6.QtCore import QEvent, QPoint, QPointF, QRect, Qt, QTimer, Signal
+from PySide6.QtGui import (
+    QKeyEvent,
+    QMouseEvent,
+    QNativeGestureEvent,
+    QPainter,
+    QPaintEvent,
+    QPixmap,
+    QResizeEvent,
+    QWheelEvent,
+)
 from PySide6.QtWidgets import QSizePolicy, QWidget
 
 from modalview.model.parts import Model
@@ -25,6 +34,8 @@ MOST_SHARE = 0.35
 # One notch of a wheel (120 units of an eighth of a degree) enlarges by so much.
 ZOOM_PER_NOTCH = 1.2
 _PAN_STEP_PX = 40
+# Of the sheet, what a part that is zoomed to fills.
+_SURROUNDINGS = 0.5
 
 
 class Sheet(QWidget):
@@ -152,6 +163,16 @@ class Sheet(QWidget):
         self._view = None
         self._rebuild()
 
+    def zoom_to(self, part: QRect) -> None:
+        """Show a part of the sheet as large as there is room, with some of its surroundings."""
+        if self._geometry is None or part.isEmpty():
+            return
+        factor = min(self.width() / part.width(), self.height() / part.height()) * _SURROUNDINGS
+        middle = QPointF(part.center())
+        away = QPointF(self.rect().center()) - middle
+        self._view = self._geometry.view.zoomed(factor, middle.x(), middle.y()).panned(away.x(), away.y())
+        self._rebuild()
+
     def zoom(self, factor: float, at: QPointF | None = None) -> None:
         """Enlarge about a point of the sheet."""
         if self._geometry is not None:
@@ -274,10 +295,30 @@ class Sheet(QWidget):
         self._timer.stop()
 
     def wheelEvent(self, event: QWheelEvent) -> None:  # noqa: N802  (Qt's name)
-        """Zoom about the pointer."""
-        notches = event.angleDelta().y() / 120
-        if notches:
+        """Zoom about the pointer; two fingers on a pad, or Shift with the wheel, move the sheet."""
+        step, held = event.pixelDelta(), event.modifiers()
+        finger = not step.isNull() and event.phase() != Qt.ScrollPhase.NoScrollPhase
+        if finger and not held & Qt.KeyboardModifier.ControlModifier:
+            self.pan(step.x(), step.y())
+            return
+        turn = event.angleDelta()
+        notches = (turn.y() or turn.x()) / 120
+        if not notches:
+            return
+        if held & Qt.KeyboardModifier.ShiftModifier:
+            self.pan(notches * _PAN_STEP_PX, 0)
+        else:
             self.zoom(ZOOM_PER_NOTCH**notches, event.position())
+
+    def event(self, event: QEvent) -> bool:
+        """Zoom by two fingers drawn apart."""
+        if (
+            isinstance(event, QNativeGestureEvent)
+            and event.gestureType() == Qt.NativeGestureType.ZoomNativeGesture
+        ):
+            self.zoom(1.0 + event.value(), event.position())
+            return True
+        return super().event(event)
 
     def mousePressEvent(self, event: QMouseEvent) -> None:  # noqa: N802  (Qt's name)
         """Begin to pan, or choose the part under the pointer."""

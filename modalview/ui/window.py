@@ -59,11 +59,11 @@ class Window(Frame):
         self.disk_strip = DiskStrip(self.watch, self.document, self.filing, self.work)
         self.work.layout().insertWidget(1, self.disk_strip)
         self.printing = Printing(self, settings)
-        self.sketching = Sketching(self)
         self._may_close = False
         # A file that is read in a blink is not told of.
         self._patience = QTimer(self, singleShot=True, interval=_BLINK_MS)
         self._connect()
+        self.sketching = Sketching(self)  # hears of a change after the sheet was told
         self._recall()
         self.show_document()
 
@@ -367,12 +367,6 @@ class Window(Frame):
     def on_paste(self) -> None:
         """Paste into the values, from the marked cell on."""
         self.parts.paste()
-
-    def on_part_chosen(self, part: str) -> None:
-        """Show the values of the part that was chosen on the sheet."""
-        if not self.below.has("sheet"):
-            self.below.show_page("values")
-        self.parts.choose_part(part)
 
     def _fill_examples(self) -> None:
         menu = self.menus.submenus["examples"]

@@ -1,4 +1,5 @@
 from conftest import settle
+from pen import Pen
 from PySide6.QtCore import QPoint
 from PySide6.QtWidgets import QApplication
 
@@ -35,9 +36,10 @@ def test_a_small_window_with_large_text_puts_places_under_tabs_and_back(pump):
     assert pump.sheet.isVisible()
 
 
-def test_a_part_chosen_on_the_sheet_does_not_hide_the_sheet(pump):
+def test_a_part_chosen_on_the_sheet_does_not_hide_the_sheet(pump, qtbot):
     pump.on_setting(names.TEXT_SIZE, 200)
-    pump.on_part_chosen("pump")
+    pen = Pen(pump, qtbot)
+    pen.click(pen.part("pump"))
     assert pump.below.current() == "sheet"
     assert pump.parts.lines.rows[pump.parts.currentIndex().row()].part_id == "pump"
 

@@ -2,6 +2,7 @@ from pathlib import Path
 
 import pytest
 from conftest import FAN, PUMP, settle
+from pen import Pen
 from PySide6.QtCore import QMimeData, QPoint, QPointF, Qt, QUrl
 from PySide6.QtGui import QDropEvent
 from PySide6.QtWidgets import (
@@ -240,10 +241,10 @@ def test_a_dropped_file_is_opened(window, qtbot):
     assert window.document.path == FAN
 
 
-def test_a_part_chosen_on_the_sheet_shows_its_values(pump):
-    box = pump.sheet._geometry.boxes[1]
-    pump.sheet._choose(QPointF((box[0] + box[2]) / 2, (box[1] + box[3]) / 2))
-    assert pump.below.current() == "values"
+def test_a_part_chosen_on_the_sheet_is_found_in_the_values_and_hides_nothing(pump, qtbot):
+    pen = Pen(pump, qtbot)
+    pen.click(pen.part("pump"))
+    assert pump.below.current() == "modes"
     assert pump.parts.lines.rows[pump.parts.currentIndex().row()].part_id == "pump"
 
 

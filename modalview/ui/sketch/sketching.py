@@ -5,6 +5,7 @@ from typing import Any
 from PySide6.QtCore import QObject
 
 from modalview.ui.sketch.editing import Editing
+from modalview.ui.sketch.excitationform import ExcitationForm
 from modalview.ui.sketch.hand import Hand
 from modalview.ui.sketch.numbers import NumberEntry
 from modalview.ui.sketch.partform import PartForm
@@ -21,6 +22,7 @@ class Sketching(QObject):
         self.palette = window.palette_of_tools
         self.numbers = NumberEntry(self.hand, window.sheet)
         self.form = PartForm(window.document, window.sheet)
+        self.force = ExcitationForm(window.document, window.sheet)
         self.editing = Editing(self.hand, window.sheet)
         self.hand.editing = self.editing
         self._awaited: tuple[tuple[str, ...], bool] | None = None  # parts whose form waits for the sheet
@@ -34,9 +36,12 @@ class Sketching(QObject):
         hand.number_begun.connect(self.numbers.begin)
         hand.chosen_changed.connect(self._on_chosen_changed)
         hand.begun.connect(self.form.hide_form)
+        hand.begun.connect(self.force.hide_form)
+        hand.force_asked.connect(self._ask_force)
         hand.drawn.connect(lambda part: self._ask_values((part,), fresh=True))
         hand.form_asked.connect(lambda parts: self._ask_values(parts, fresh=False))
         window.parts.part_chosen.connect(self._on_part_of_table)
+        window.results.force_asked.connect(self.add_force)
         window.results.doubts.parts_chosen.connect(self._on_parts_of_doubt)
         window.sheet.laid_out.connect(self._on_laid_out)
         window.document.model_changed.connect(self._on_model_changed)
@@ -103,3 +108,19 @@ class Sketching(QObject):
         self.form.show_parts(parts, beside, fresh=fresh, system=self._window.system_of_units())
         if not fresh:
             self.form.take_keyboard()
+
+    def _ask_force(self, body: str, place: tuple[float, ...]) -> None:
+        """Ask what acts at a place on a body."""
+        self.form.hide_form()
+        self.force.show_at(body, place, self.hand.rectangle((body,)), system=self._window.system_of_units())
+
+    def add_force(self) -> None:
+        """Ask what acts on the chosen body, or on the first: the way of the keyboard and of the results."""
+        hand = self.hand
+        bodies = [body.id for body in hand.model.bodies] if hand.model is not None else []
+        chosen = next((part for part in hand.chosen if part in bodies), bodies[0] if bodies else None)
+        if chosen is None or not hand.ready:
+            hand.say("Draw a body first; a machine's orders act on it.")
+            return
+        hand.choose((chosen,))
+        self._ask_force(chosen, hand.place(hand.middle_of(chosen)))
