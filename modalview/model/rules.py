@@ -60,7 +60,9 @@ def _names(model: Model) -> Iterator[Fault]:
             if name in first:
                 reason = f'"{cut(name)}" is already the id of {first[name]}; ids are unique over the file'
                 yield Fault(f"{place_of(group, number, name)} . id", reason)
-            else:
+            elif not name.isprintable() or not name.strip():  # asked here too: most are plain, and many
                 yield from _at(group, number, name, plain_id("id", name))
-            yield from _at(group, number, name, plain_name("name", getattr(part, "name", None)))
+            label = getattr(part, "name", None)
+            if label is not None and not label.isprintable():
+                yield from _at(group, number, name, plain_name("name", label))
             first.setdefault(name, f"{group}[{number}]")
