@@ -38,6 +38,7 @@ def test_a_small_window_with_large_text_puts_places_under_tabs_and_back(pump):
 
 def test_a_part_chosen_on_the_sheet_does_not_hide_the_sheet(pump, qtbot):
     pump.on_setting(names.TEXT_SIZE, 200)
+    settled(pump, 1280, 800)
     pen = Pen(pump, qtbot)
     pen.click(pen.part("pump"))
     assert pump.below.current() == "sheet"
