@@ -6,6 +6,7 @@ from dataclasses import dataclass
 import numpy as np
 
 from modalview.factor.inertia import Inertia
+from modalview.factor.relative import USUAL_SHARE, WIDENED, Relative
 from modalview.factor.shifted import ShiftedPencil
 
 # An edge may move outward by this share of itself, its uncertainty included; beyond, the count is undecided.
@@ -158,11 +159,12 @@ def _outward(shifted: ShiftedPencil, lam: float, side: float) -> Inertia | str:
     allowed = LARGEST_SHARE * abs(lam) if lam else LARGEST_SHARE_OF_TOP * shifted.extents.top
     least = shifted.least_uncertainty(lam)
     sought = _Sought(lam, side, allowed)
-    found = sought.sparse(shifted.factorize) if least < allowed else None
+    nudges = NUDGES if shifted.relative is None else 0
+    found = sought.sparse(shifted.factorize, nudges) if least < allowed else None
     if found is not None and sought.proven_by(found):
         return found
     if shifted.relative is not None:
-        relative = sought.sparse(shifted.relative.factorize)
+        relative = sought.relative(shifted.relative)
         if sought.proven_by(relative):
             return relative
     if found is None:
@@ -182,26 +184,38 @@ class _Sought:
     side: float
     allowed: float
 
-    def sparse(self, factorize: Callable[[float], Inertia]) -> Inertia:
+    def sparse(
+        self, factorize: Callable[[float], Inertia], nudges: int = NUDGES, first: float = FIRST_SHARE
+    ) -> Inertia:
         """Factor at edges ever farther out until one proves its count; the last one where none does.
 
-        The first edge is a guess, the second follows from the uncertainty seen there, then come the nudges.
+        The first edge is a guess, the second follows from the uncertainty seen there, then come the nudges:
+        always where pivots vanish, else at most so many, as an uncertainty is much the same all around.
         """
         unit = NUDGE / LARGEST_SHARE * self.allowed
-        distance = FIRST_SHARE / LARGEST_SHARE * self.allowed
+        distance = first / LARGEST_SHARE * self.allowed
         nudged = 0
         for _ in range(TRIES):
             found = factorize(_displaced(self.lam, self.side, distance))
             if self.proven_by(found):
                 break
-            if distance < STAND_OFF * found.uncertainty <= self.allowed / 2:
-                distance = STAND_OFF * found.uncertainty
-            elif nudged < NUDGES:
+            beyond = STAND_OFF * found.uncertainty
+            if distance < beyond and beyond + found.uncertainty <= self.allowed:
+                distance = beyond
+            elif nudged < (NUDGES if found.uncertainty == np.inf else nudges):
                 nudged += 1
                 distance = nudged * unit
             else:
                 break
         return found
+
+    def relative(self, relative: Relative) -> Inertia:
+        """Do the same in relative coordinates, first where their usual share of rounding is proof enough."""
+
+        def factorize(sigma: float) -> Inertia:
+            return relative.factorize(sigma, abs(sigma - self.lam) / STAND_OFF)
+
+        return self.sparse(factorize, first=STAND_OFF * WIDENED * USUAL_SHARE)
 
     def proven_by(self, found: Inertia) -> bool:
         """Whether everything on this side of lam is counted, and nothing beyond what is allowed."""

@@ -18,8 +18,12 @@ Array = npt.NDArray[np.float64]
 METHOD = "sparse LDL^T in relative coordinates"
 
 # Shares of K + sigma M that rounding is held against, in turn; the count then stands within 2.1 of the share.
-SHARES = (1e-10, 1e-8, 2e-7)
+USUAL_SHARE = 1e-8
+SHARES = (1e-10, USUAL_SHARE, 2e-7)
 WIDENED = 2.1
+
+# Rounding of a share that was asked for.
+PLAY = 1e-6
 
 # The proof of definiteness keeps back this much of its own rounding.
 KEPT_BACK = 0.9
@@ -68,8 +72,15 @@ class Relative:
             ),
         )
 
-    def factorize(self, sigma: float) -> Inertia:
+    def factorize(self, sigma: float, enough: float = 0.0) -> Inertia:
         """Count by the signs of sparse pivots in relative coordinates; infinite where nothing is proven.
+
+        Parameters
+        ----------
+        sigma : float
+            rad**2/s**2.
+        enough : float
+            An uncertainty that need not be bettered, rad**2/s**2: every share tried is one factorization.
 
         Notes
         -----
@@ -91,10 +102,12 @@ class Relative:
         scaling = formed.scaling(abs(sigma))
         spread = formed.spread[0] + abs(sigma) * formed.spread[1]
         error = SLACK * (times(scaling) + spread @ scaling) / scaling
-        for share in SHARES:
+        widened = WIDENED * abs(sigma)
+        plenty = sum(widened * share <= enough * (1 + PLAY) for share in SHARES)
+        for share in SHARES[max(0, plenty - 1) :]:
             if _holds(formed, share, abs(sigma), error, scaling):
                 negative = int(np.count_nonzero(pivots < 0))
-                return Inertia(sigma, negative, WIDENED * share * abs(sigma), METHOD)
+                return Inertia(sigma, negative, widened * share, METHOD)
         return Inertia(sigma, 0, np.inf, METHOD)
 
 

@@ -47,7 +47,7 @@ def grid(side: int) -> Pencil:
 
 def edits() -> None:
     """Print what a count costs after one edit of a spring."""
-    print("count after one edit: new spring | same spring, new value, each against one factorization")
+    print("proven count after one edit: new spring | same spring, new value, each against one factorization")
     for name, pencil in (
         ("plane 180", assemble(plane_model()).pencil()),
         ("grid 2500", grid(50)),
@@ -60,10 +60,11 @@ def edits() -> None:
         counted = edited_count(shifted, found, row)
         values = count(1)
         first = in_turn(
-            lambda: edited_count(shifted, found, row).after(np.array([0.5])), lambda: shifted.factorize(sigma)
+            lambda: edited_count(shifted, found, row).proven(np.array([0.5])),
+            lambda: shifted.factorize(sigma),
         )
         again = in_turn(
-            lambda: counted.after(np.array([0.01 * next(values)])), lambda: shifted.factorize(sigma)
+            lambda: counted.proven(np.array([0.01 * next(values)])), lambda: shifted.factorize(sigma)
         )
         relative = in_turn(lambda: shifted.relative.factorize(sigma), lambda: shifted.factorize(sigma))
         print(f"{name:12s} {first}\n{'':12s} {again}\n  relative   {relative}")

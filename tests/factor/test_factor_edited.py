@@ -1,8 +1,11 @@
 """Counts after edits agree with counts made anew."""
 
+from fractions import Fraction
+
 import numpy as np
 import pytest
 import scipy.sparse as sp
+from test_factor_hostile import exact_entries, models, truth
 
 from modalview.assembly.pencil import pencil_of_terms
 from modalview.errors import NumericalError
@@ -62,3 +65,101 @@ def test_a_drag_needs_no_new_solve_and_too_many_directions_are_refused():
         assert counted.after(np.array([stiffness[0] - pencil.stiffness[0]])) == np.count_nonzero(truth < 50.0)
     with pytest.raises(NumericalError, match="11 edited directions"):
         edited_count(pencil.shifted, found, pencil.rows[: MOST_EDITS + 1])
+
+
+def edited(pencil, terms, change):
+    stiffness = pencil.stiffness.copy()
+    stiffness[terms] += change
+    return pencil_of_terms(pencil.rows, stiffness, pencil.M.diagonal())
+
+
+def hostile_changes(pencil, found, term):
+    """Changes that bring a mode onto the shift, and that miss it by little; then any."""
+    flexibility = edited_count(pencil.shifted, found, pencil.rows[[term]]).flexibility[0, 0]
+    critical = -1 / flexibility
+    for share in (0.0, 1e-14, -1e-14, 1e-9, -1e-9, 1e-4, -1e-4, 0.5, -0.5):
+        if pencil.stiffness[term] + critical * (1 + share) > 0:
+            yield critical * (1 + share)
+    yield from (pencil.stiffness[term] * factor for factor in (-0.9, 0.5, 1e3))
+
+
+def judged(pencil, terms, change, proven, entries=None):
+    """Hold a proven count against exact counts of the edited model at both ends of its uncertainty."""
+    entries = exact_entries(edited(pencil, terms, change)) if entries is None else entries
+    at, delta = Fraction(proven.sigma), Fraction(proven.uncertainty)
+    return truth(entries, at - delta) <= proven.negative <= truth(entries, at + delta)
+
+
+def tally(every):
+    """Prove counts of hostile edits at hostile shifts; return how many were proven and tried."""
+    tried = proven = 0
+    rng = np.random.default_rng(5)
+    for pencil in models():
+        spectrum = np.linalg.eigvalsh(pencil.standard.toarray())
+        for lam in spectrum[spectrum > 1e-9 * spectrum[-1]][::every]:
+            for sigma in (lam * (1 + 1e-13), lam * (1 + 1e-9), lam * (1 - 1e-5), lam * 1.07):
+                found = pencil.shifted.factorize(float(sigma))
+                if not found.uncertainty < sigma:
+                    continue
+                term = int(rng.integers(pencil.stiffness.size))
+                counted = edited_count(pencil.shifted, found, pencil.rows[[term]])
+                for change in hostile_changes(pencil, found, term):
+                    result = counted.proven(np.array([change]))
+                    tried += 1
+                    if result.uncertainty < sigma:
+                        proven += 1
+                        assert judged(pencil, [term], change, result), (pencil.n, sigma, change)
+    return proven, tried
+
+
+def test_no_proven_count_of_a_hostile_edit_is_wrong():
+    proven, tried = tally(every=75)
+    assert tried > 150
+    assert proven > tried / 3
+
+
+@pytest.mark.slow
+def test_no_proven_count_of_thousands_of_hostile_edits_is_wrong():
+    proven, tried = tally(every=1)
+    assert tried > 3000
+    assert proven > tried / 3
+
+
+@pytest.mark.parametrize("seed", range(3))
+def test_several_edits_at_once_are_proven_and_as_sharp_as_the_factors(seed):
+    rng = np.random.default_rng(seed)
+    before = ladder(seed, n=12)
+    spectrum = np.linalg.eigvalsh(before.standard.toarray())
+    found = before.shifted.factorize(float(spectrum[4] + spectrum[5]) / 2)
+    terms = rng.choice(before.stiffness.size, 4, replace=False)
+    counted = edited_count(before.shifted, found, before.rows[terms])
+    for _ in range(4):
+        change = before.stiffness[terms] * rng.uniform(-0.9, 3, 4)
+        proven = counted.proven(change)
+        assert proven.uncertainty < 1e-9 * found.sigma
+        assert judged(before, terms, change, proven)
+
+
+def test_wrong_answers_of_the_solves_prove_nothing_or_less():
+    before = ladder(2)
+    found = before.shifted.factorize(50.0)
+    counted = edited_count(before.shifted, found, before.rows[:1])
+    honest = counted.proven(np.array([5.0]))
+
+    class Careless(type(before.shifted)):
+        def solve(self, found, right):
+            return 1.3 * super().solve(found, right)
+
+    careless = Careless(**{name: getattr(before.shifted, name) for name in before.shifted.__slots__})
+    misled = edited_count(careless, found, before.rows[:1]).proven(np.array([5.0]))
+    assert honest.uncertainty < 1e-8
+    assert misled.uncertainty > 1e3 * honest.uncertainty
+
+
+def test_massless_coordinates_leave_the_proof_open():
+    mass = np.ones(30)
+    mass[3] = 0
+    pencil = ladder(1, mass=mass)
+    counted = edited_count(pencil.shifted, pencil.shifted.factorize(50.0), pencil.rows[:1])
+    assert counted.after(np.array([2.0])) is not None
+    assert counted.proven(np.array([2.0])).uncertainty == np.inf

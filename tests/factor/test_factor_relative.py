@@ -7,6 +7,7 @@ from test_factor_counts import assert_decided, chain
 
 from modalview.assembly.pencil import pencil_of_terms
 from modalview.factor.counts import count_at_most
+from modalview.factor.pattern import Pattern
 from modalview.factor.relative import METHOD
 from modalview.factor.stiffbasis import product, relative_basis
 
@@ -84,6 +85,19 @@ def test_massless_coordinates_between_stiff_springs_are_counted_along():
 def test_the_method_is_told_and_used_only_where_it_is_needed():
     assert count_at_most(softly_held(1e3).shifted, 0.4).method == "sparse LDL^T"
     assert count_at_most(softly_held(1e12).shifted, 0.4).method == METHOD
+
+
+def test_few_factorizations_decide_beside_stiff_parts(monkeypatch):
+    pencil, made = softly_held(1e12), []
+    factorize = Pattern.factorize
+    monkeypatch.setattr(Pattern, "factorize", lambda self, data: made.append(1) or factorize(self, data))
+    assert count_at_most(pencil.shifted, 0.4).number == 0
+    assert len(made) <= 3
+
+
+def test_an_uncertainty_that_is_enough_is_not_bettered():
+    relative = softly_held(1e9).shifted.relative
+    assert relative.factorize(0.4).uncertainty < relative.factorize(0.4, 3e-8 * 0.4).uncertainty < 3e-8 * 0.4
 
 
 def test_the_basis_makes_stiff_terms_stretch_relative_coordinates_only():
