@@ -2,8 +2,9 @@
 
 from typing import Any
 
-from PySide6.QtCore import Qt
-from PySide6.QtWidgets import QFrame, QGridLayout, QLabel, QWidget
+from PySide6.QtCore import Qt, Signal
+from PySide6.QtGui import QContextMenuEvent, QKeyEvent, QMouseEvent
+from PySide6.QtWidgets import QFrame, QGridLayout, QLabel, QMenu, QWidget
 
 from modalview.ui.symbols import VerdictSign
 from modalview.ui.theme import Theme
@@ -57,11 +58,19 @@ def nearest_text(check: Any) -> str:
 
 
 class CheckCard(QFrame):
-    """A card of the results; updated in place on every edit."""
+    """A card of the results; updated in place on every edit.
+
+    Enter or a double click asks for its values, Delete takes the order away; a right click offers both.
+    """
+
+    change_asked = Signal(str)  # machine
+    removal_asked = Signal(str, str)  # machine, excitation
 
     def __init__(self, parent: QWidget | None = None) -> None:
         super().__init__(parent)
         self.setProperty("role", "card")
+        self.setFocusPolicy(Qt.FocusPolicy.StrongFocus)
+        self._band: Any = None
         self.sign = VerdictSign(1.2, self)
         self.label = QLabel(self)
         self.label.setProperty("role", "strong")
@@ -91,6 +100,7 @@ class CheckCard(QFrame):
 
         ``machine`` names the machine where there are several.
         """
+        self._band = check.band
         verdict = str(check.verdict)
         self.sign.show_verdict(verdict, theme)
         label = one_line(f"{machine}: {check.band.label}" if machine else check.band.label)
@@ -107,6 +117,38 @@ class CheckCard(QFrame):
         self.setToolTip(f"{check.band.check}: {check.reason}\n{_margin_text(check.band)}")
         self.setAccessibleName(f"{label}, {self.frequency.text()}: {check.wording}")
         self.setAccessibleDescription(f"{nearest}. {check.reason}".removeprefix(". "))
+
+    def ask_change(self) -> None:
+        """Ask for the values of its machine."""
+        if self._band is not None:
+            self.change_asked.emit(self._band.machine)
+
+    def ask_removal(self) -> None:
+        """Ask to take the order away."""
+        if self._band is not None:
+            self.removal_asked.emit(self._band.machine, self._band.excitation_id)
+
+    def keyPressEvent(self, event: QKeyEvent) -> None:  # noqa: N802  (Qt's name)
+        """Change by Enter, remove by Delete."""
+        if event.key() in (Qt.Key.Key_Return, Qt.Key.Key_Enter):
+            self.ask_change()
+        elif event.key() == Qt.Key.Key_Delete:
+            self.ask_removal()
+        else:
+            super().keyPressEvent(event)
+
+    def mouseDoubleClickEvent(self, event: QMouseEvent) -> None:  # noqa: N802  (Qt's name)
+        """Change."""
+        del event
+        self.ask_change()
+
+    def contextMenuEvent(self, event: QContextMenuEvent) -> None:  # noqa: N802  (Qt's name)
+        """Offer both."""
+        menu = QMenu(self)
+        menu.setAttribute(Qt.WidgetAttribute.WA_DeleteOnClose)
+        menu.addAction("Change…", self.ask_change)
+        menu.addAction("Remove this order", self.ask_removal)
+        menu.popup(event.globalPos())
 
 
 def _margin_text(band: Any) -> str:

@@ -3,7 +3,17 @@
 from typing import Any
 
 from PySide6.QtCore import Qt, Signal
-from PySide6.QtWidgets import QFrame, QLabel, QPushButton, QScrollArea, QSizePolicy, QVBoxLayout, QWidget
+from PySide6.QtWidgets import (
+    QFrame,
+    QHBoxLayout,
+    QLabel,
+    QPushButton,
+    QScrollArea,
+    QSizePolicy,
+    QToolButton,
+    QVBoxLayout,
+    QWidget,
+)
 
 from modalview.model.parts import Machine, Model
 from modalview.ui.analysis import Analysis
@@ -27,6 +37,16 @@ def _heading(text: str, parent: QWidget) -> QLabel:
     return label
 
 
+def _small_button(text: str, tip: str, parent: QWidget) -> QToolButton:
+    button = QToolButton(parent)
+    button.setText(text)
+    button.setToolTip(tip)
+    button.setAutoRaise(True)
+    button.setProperty("role", "small")
+    button.setFocusPolicy(Qt.FocusPolicy.StrongFocus)
+    return button
+
+
 class MachineForm(QFrame):
     """Speed and margin of one machine, edited in place."""
 
@@ -36,8 +56,24 @@ class MachineForm(QFrame):
         self._layout = QVBoxLayout(self)
         self._layout.setContentsMargins(0, 0, 0, 6)
         self._layout.setSpacing(4)
-        self._layout.addWidget(_heading(f"Machine: {machine.name or machine.id}", self))
+        head = QHBoxLayout()
+        head.setSpacing(2)
+        self.heading = _heading("", self)
+        head.addWidget(self.heading, 1)
+        self.change = _small_button("Change", "Type all values of this machine and its orders", self)
+        self.remove = _small_button("Remove", "Take this machine and its orders away", self)
+        head.addWidget(self.change)
+        head.addWidget(self.remove)
+        self._layout.addLayout(head)
+        self.show_name(machine)
         self.fields: dict[tuple[str | int, ...], EntryField] = {}
+
+    def show_name(self, machine: Machine) -> None:
+        """Show the machine's name."""
+        called = machine.name or machine.id
+        self.heading.setText(f"Machine: {called}")
+        self.change.setAccessibleName(f"Change machine {called}")
+        self.remove.setAccessibleName(f"Remove machine {called}")
 
     def show_rows(self, rows: list[ValueRow]) -> None:
         """Show the values; fields are kept while the machine has the same ones."""
@@ -65,6 +101,8 @@ class Results(QScrollArea):
     """The column; a long one scrolls."""
 
     force_asked = Signal()
+    change_asked = Signal(str)  # machine
+    removal_asked = Signal(str, str)  # machine, and an order of it or "" for the whole
 
     def __init__(self, document: Document, analysis: Analysis, parent: QWidget | None = None) -> None:
         super().__init__(parent)
@@ -135,7 +173,14 @@ class Results(QScrollArea):
         for machine in model.machines:
             if machine.id not in self._machines:
                 form = self._machines[machine.id] = MachineForm(machine, self._document, self._inside)
+                form.remove.clicked.connect(
+                    lambda _checked=False, name=machine.id: self.removal_asked.emit(name, "")
+                )
+                form.change.clicked.connect(
+                    lambda _checked=False, name=machine.id: self.change_asked.emit(name)
+                )
                 self._forms.addWidget(form)
+            self._machines[machine.id].show_name(machine)
             self._machines[machine.id].show_rows(machine_rows(model, machine, system))
         self.none_yet.setVisible(not any(machine.excitations for machine in model.machines))
         _say(self.story, (model.notes,) if model.notes else ())
@@ -154,6 +199,8 @@ class Results(QScrollArea):
         self._heading.setVisible(bool(checks))
         while len(self._cards) < len(checks):
             card = CheckCard(self._inside)
+            card.change_asked.connect(self.change_asked)
+            card.removal_asked.connect(self.removal_asked)
             self._cards.append(card)
             self._checks.addWidget(card)
         machines = self._document.model.machines if self._document.model is not None else ()

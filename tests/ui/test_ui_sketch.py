@@ -331,3 +331,35 @@ def type_of_find():
     from modalview.ui.sketch.asking import FindPart
 
     return FindPart
+
+
+def test_an_order_is_removed_from_its_card_and_comes_back_by_undo(pump, qtbot):
+    card = pump.results._cards[1]
+    card.setFocus()
+    pen = Pen(pump, qtbot)
+    pen.key_on(card, Qt.Key.Key_Delete)
+    assert [one.id for one in pump.document.model.machines[0].excitations] == ["1x", "vane"]
+    pump.document.stack.undo()
+    assert len(pump.document.model.machines[0].excitations) == 3
+
+
+def test_a_card_asks_for_the_values_of_its_machine(pump, qtbot):
+    pen = Pen(pump, qtbot)
+    pen.key_on(pump.results._cards[0], Qt.Key.Key_Return)
+    assert pump.sketching.form.ids == ("pump set",)
+    assert pump.sketching.form.isVisible()
+
+
+def test_a_machine_is_removed_with_its_orders(pump):
+    pump.results._machines["pump set"].remove.click()
+    assert pump.document.model.machines == ()
+    assert pump.results.none_yet.isVisible()
+
+
+def test_undo_in_the_middle_of_a_drag_ends_the_drag(sketch):
+    two_masses(sketch)
+    sketch.drag(sketch.part("left"), sketch.part("left") + QPoint(0, -60), let_go=False)
+    sketch.window.document.stack.undo()
+    undone = model(sketch)
+    sketch.let_go(sketch.at(0.0, 2.4))
+    assert model(sketch) == undone

@@ -2,8 +2,9 @@
 
 from typing import Any
 
-from PySide6.QtCore import QObject
+from PySide6.QtCore import QObject, QRect
 
+from modalview.model.removing import without
 from modalview.ui.sketch.editing import Editing
 from modalview.ui.sketch.excitationform import ExcitationForm
 from modalview.ui.sketch.hand import Hand
@@ -42,6 +43,8 @@ class Sketching(QObject):
         hand.form_asked.connect(lambda parts: self._ask_values(parts, fresh=False))
         window.parts.part_chosen.connect(self._on_part_of_table)
         window.results.force_asked.connect(self.add_force)
+        window.results.change_asked.connect(self.change_machine)
+        window.results.removal_asked.connect(self.remove_machine)
         window.results.doubts.parts_chosen.connect(self._on_parts_of_doubt)
         window.sheet.laid_out.connect(self._on_laid_out)
         window.document.model_changed.connect(self._on_model_changed)
@@ -124,3 +127,16 @@ class Sketching(QObject):
             return
         hand.choose((chosen,))
         self._ask_force(chosen, hand.place(hand.middle_of(chosen)))
+
+    def change_machine(self, machine: str) -> None:
+        """Ask for all values of a machine and its orders."""
+        sheet = self._window.sheet
+        beside = QRect(sheet.width() - 2, 8, 1, 1)
+        self.form.show_parts((machine,), beside, system=self._window.system_of_units())
+        self.form.take_keyboard()
+
+    def remove_machine(self, machine: str, excitation: str) -> None:
+        """Take an order away, or a machine with all of them."""
+        model = self._window.document.model
+        gone = {(machine, excitation)} if excitation else {machine}
+        self.hand.change(without(model, gone), f"Remove {excitation or machine}")

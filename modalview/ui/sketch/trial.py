@@ -21,13 +21,18 @@ class Trial:
         return self._document.model is self._shown
 
     def show(self, model: Model) -> None:
-        """Show a model, until the next one, or until it is settled or given back."""
-        if model is not self._shown:
+        """Show a model, until the next one, or until it is settled or given back.
+
+        Nothing is shown any more once somebody else changed the model.
+        """
+        if self.stands and model is not self._shown:
             self._document.replace_model(model)
             self._shown = model
 
     def settle(self, text: str, *, merge: object = None) -> str:
         """Make what is shown the one edit; return why not, or nothing."""
+        if not self.stands:
+            return "the model was changed meanwhile; nothing more was done"
         model = self._shown
         if model == self._before:
             self.give_back()
