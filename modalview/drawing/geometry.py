@@ -301,16 +301,16 @@ def _collect_faces(
     """Add the faces' corners, the bodies furthest from the eye first."""
     towards = np.cross(view.matrix[0], view.matrix[1])
     order = np.argsort(places.centres @ towards, kind="stable").tolist()
-    groups: list[Indices] = []
+    runs: list[list[Indices]] = []
     for number in order:
         arms = faces_of[number]
         rest = view.to_pixels(places.centres[number] + arms)
         indices = collector.add(rest, arms, np.full(arms.shape[:2], number)).reshape(arms.shape[:2])
-        if groups and groups[-1].shape[1] == indices.shape[1]:
-            groups[-1] = np.vstack([groups[-1], indices])
+        if runs and runs[-1][0].shape[1] == indices.shape[1]:
+            runs[-1].append(indices)
         else:
-            groups.append(indices)
-    return tuple(groups)
+            runs.append([indices])
+    return tuple(np.vstack(run) for run in runs)
 
 
 def _collect_links(

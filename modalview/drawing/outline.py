@@ -20,6 +20,8 @@ PAD = 22.0  # from the outermost attachment to the side of the body
 POINT = 5.0  # half side of a massless junction
 DISC_HALF_WIDTH = 13.0
 DISC_CORNERS = 28
+# Bodies up to here are compared each with each; of more, only a few pixels of each are to be seen anyway.
+COMPARED = 2000
 ROOM = 0.40  # share of the way to a neighbour's centre that a body may fill, along a row
 ROOM_ABOVE = 0.27  # the same across rows, where springs stand between
 
@@ -159,17 +161,33 @@ def _preferred(places: Layout, upright: int, scales: Floats, grow: float) -> Flo
         half[:, 1] = 0.6 * half[:, 0]
     if not count:
         return half
+    if count > COMPARED:
+        for axis, share in ((0, ROOM), (upright, ROOM_ABOVE)):
+            half[:, axis] = np.minimum(half[:, axis], share * _nearest_levels(places.centres[:, axis]))
+        return _short_of_springs(places, half, upright, LEAST / 2 / scales[upright] * grow)
     steps = np.abs(places.centres[:, None] - places.centres[None])
     abreast = steps[:, :, upright] < half[:, None, upright]
     for axis, near, share in ((0, abreast, ROOM), (upright, ~abreast, ROOM_ABOVE)):
         others = np.where(near & (steps[:, :, axis] > 0), steps[:, :, axis], np.inf).min(axis=1)
         half[:, axis] = np.minimum(half[:, axis], share * others)
+    return _short_of_springs(places, half, upright, LEAST / 2 / scales[upright] * grow)
+
+
+def _nearest_levels(places: Floats) -> Floats:
+    """Return how far each place is from the nearest other level: what a row of a lattice leaves as room."""
+    levels, which = np.unique(places, return_inverse=True)
+    steps = np.concatenate([[np.inf], np.diff(levels), [np.inf]])
+    return np.asarray(np.minimum(steps[:-1], steps[1:])[which])
+
+
+def _short_of_springs(places: Layout, half: Floats, upright: int, least: float) -> Floats:
+    """Return half sizes that leave room for the shortest spring at each body."""
+    count = len(half)
     spans = np.abs(places.ends[:, 0, upright] - places.ends[:, 1, upright])
     shortest = np.full(count, np.inf)
     for side in (0, 1):
         counted = (spans > 0) & (places.end_bodies[:, side] >= 0)
         np.minimum.at(shortest, places.end_bodies[counted, side], spans[counted])
-    least = LEAST / 2 / scales[upright] * grow
     half[:, upright] = np.minimum(half[:, upright], np.maximum(ROOM_ABOVE * shortest, least))
     return half
 

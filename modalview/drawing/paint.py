@@ -1,5 +1,6 @@
 """The one module that paints a drawing, with QPainter."""
 
+import threading
 from typing import TYPE_CHECKING, cast
 
 import numpy as np
@@ -64,7 +65,14 @@ class LineBuffer:
         self._lines += [wrap(start + row * _BYTES_PER_LINE, QLineF) for row in range(_BLOCK)]
 
 
-_BUFFER = LineBuffer()
+_OWN = threading.local()  # each thread that paints has a buffer of its own
+
+
+def _buffer() -> LineBuffer:
+    if not hasattr(_OWN, "buffer"):
+        _OWN.buffer = LineBuffer()
+    buffer: LineBuffer = _OWN.buffer
+    return buffer
 
 
 def paint(painter: QPainter, drawing: Drawing, palette: Palette, *, family: str | None = None) -> None:
@@ -73,7 +81,7 @@ def paint(painter: QPainter, drawing: Drawing, palette: Palette, *, family: str 
     Parameters
     ----------
     painter : QPainter
-        Of the GUI thread: the lines share one buffer.
+        On a QImage it may be of any thread.
     drawing : Drawing
     palette : Palette
     family : str or None
@@ -111,7 +119,7 @@ class _Painting:
         if not len(item.segments):
             return
         self.painter.setPen(self.pen(item.role, item.width, item.opacity))
-        self.painter.drawLines(_BUFFER.filled(item.segments))
+        self.painter.drawLines(_buffer().filled(item.segments))
 
     def polygons(self, item: Polygons) -> None:
         self.shape(item.stroke, item.fill, item.width, item.opacity)

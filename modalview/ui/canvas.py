@@ -2,7 +2,8 @@
 
 from typing import Any
 
-from PySide6.QtGui import QPainter, QPixmap
+from PySide6.QtCore import QSize
+from PySide6.QtGui import QImage, QPainter, QPixmap
 from PySide6.QtWidgets import QWidget
 
 from modalview.ui.theme import Theme
@@ -25,3 +26,17 @@ def painted(drawing: Any, widget: QWidget, theme: Theme) -> QPixmap:
     paint_drawing(painter, drawing, theme)
     painter.end()
     return pixmap
+
+
+def image_of(drawing: Any, size: QSize, ratio: float, theme: Theme, under: QImage | None = None) -> QImage:
+    """Return a drawing as a picture over another one or on paper colour; may be called in any thread."""
+    if under is not None:
+        image = QImage(under)  # a copy, made when it is painted on
+    else:
+        image = QImage(size * ratio, QImage.Format.Format_RGB32)
+        image.setDevicePixelRatio(ratio)
+        image.fill(theme.paper)
+    painter = QPainter(image)
+    paint_drawing(painter, drawing, theme)
+    painter.end()
+    return image

@@ -98,7 +98,7 @@ def _settled(window: Window) -> bool:
     # Between the outlook and the modes of a small model nothing is under way for a moment.
     wanted = analysis.automatic and analysis.outlook.coordinates <= SMALL_MODEL
     solved = analysis.solution_current or not (wanted or analysis.finding)
-    return solved and (analysis.plane is not None or bool(analysis.plane_why))
+    return solved and window.sheet.settled and (analysis.plane is not None or bool(analysis.plane_why))
 
 
 def _arrange(window: Window, look: Look) -> None:

@@ -7,6 +7,7 @@ from typing import Any
 
 from PySide6.QtCore import QEvent, QPoint, QPointF, QRect, Qt, QTimer, Signal
 from PySide6.QtGui import (
+    QColor,
     QKeyEvent,
     QMouseEvent,
     QNativeGestureEvent,
@@ -19,7 +20,9 @@ from PySide6.QtGui import (
 from PySide6.QtWidgets import QSizePolicy, QWidget
 
 from modalview.model.parts import Model
+from modalview.ui import crowd
 from modalview.ui.canvas import paint_drawing, painted
+from modalview.ui.crowd import CrowdPainter
 from modalview.ui.later import Later
 from modalview.ui.swing import Swing
 from modalview.ui.theme import LIGHT, Theme
@@ -67,6 +70,8 @@ class Sheet(QWidget):
         self._later.timeout.connect(self._rebuild)
         self._background = Later(self)
         self._background.done.connect(self._show_geometry)
+        self._crowd = CrowdPainter(self)
+        self._crowd.painted.connect(self._on_crowd_painted)
         self.hand: Any = None  # ui.sketch.hand.Hand, which draws on the sheet
         self._drag: QPoint | None = None
         self._space = False
@@ -89,6 +94,8 @@ class Sheet(QWidget):
         if fit:
             self._view = None
             self._selected = None
+            self._crowd.forget()
+            self._geometry = None if len(model.bodies) > crowd.AT_ONCE else self._geometry
             self._rebuild()
         else:
             self._later.start(LATER_MS)
@@ -156,7 +163,7 @@ class Sheet(QWidget):
     @property
     def settled(self) -> bool:
         """Whether what is shown is the model as it stands, laid out and painted."""
-        return not (self._later.isActive() or self._background.waits_for("sheet"))
+        return not (self._later.isActive() or self._background.waits_for("sheet") or self._crowd.busy)
 
     def fit(self) -> None:
         """Show the whole model."""
@@ -215,8 +222,9 @@ class Sheet(QWidget):
         self.laid_out.emit()
 
     def close_threads(self) -> None:
-        """Wait for a layout under way."""
+        """Wait for a layout and a painting under way."""
         self._background.close()
+        self._crowd.close()
 
     def _pose(self) -> None:
         self._rest = self._posed = None
@@ -249,18 +257,31 @@ class Sheet(QWidget):
         del event
         start = perf_counter()
         self._paint()
-        took_ms = 1000 * (perf_counter() - start)
+        self._pace(1000 * (perf_counter() - start))
+
+    def _pace(self, took_ms: float) -> None:
         self._timer.setInterval(max(FRAME_MS, round(took_ms / MOST_SHARE)))
+
+    def _on_crowd_painted(self, took_ms: float) -> None:
+        self._pace(took_ms)
+        self.update()
 
     def _paint(self) -> None:
         painter = QPainter(self)
         if self._geometry is None:
             return
-        if self._rest is None:
-            self._rest = self._rest_pixmap()
-        painter.drawPixmap(0, 0, self._rest)
-        if self._posed is not None:
-            paint_drawing(painter, self.moving_drawing(), self._theme)
+        if len(self._geometry.centres) > crowd.AT_ONCE:
+            picture = self._crowd.picture(self._moment())
+            if picture is not None:
+                painter.drawImage(0, 0, picture)
+            else:
+                painter.fillRect(self.rect(), QColor(self._theme.paper))
+        else:
+            if self._rest is None:
+                self._rest = self._rest_pixmap()
+            painter.drawPixmap(0, 0, self._rest)
+            if self._posed is not None:
+                paint_drawing(painter, self.moving_drawing(), self._theme)
         if self.hand is not None and (items := self.hand.items()):
             from modalview.drawing import sheet  # noqa: PLC0415  (numpy comes after the first paint)
 
@@ -271,10 +292,25 @@ class Sheet(QWidget):
         """Return the frame of this moment: moving, or frozen with arrows."""
         from modalview.drawing import motion  # noqa: PLC0415  (see above)
 
-        fading = getattr(self._mode, "overdamped", False)
-        factor = self._swing.fading(self.amplitude) if fading else self._swing.factor(self.amplitude)
         show = motion.frame if self._swing.running else motion.frozen
-        return show(self._geometry, self._posed, factor)
+        return show(self._geometry, self._posed, self._factor())
+
+    def _factor(self) -> complex:
+        fading = getattr(self._mode, "overdamped", False)
+        return self._swing.fading(self.amplitude) if fading else self._swing.factor(self.amplitude)
+
+    def _moment(self) -> crowd.Moment:
+        return crowd.Moment(
+            geometry=self._geometry,
+            posed=self._posed,
+            factor=self._factor() if self._posed is not None else 0.0,
+            frozen=not self._swing.running,
+            title=self._title,
+            selected=self._selected,
+            size=self.size(),
+            ratio=self.devicePixelRatioF(),
+            theme=self._theme,
+        )
 
     # What a person does
 

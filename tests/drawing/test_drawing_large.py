@@ -1,0 +1,28 @@
+"""Sheets of more bodies than can be compared each with each."""
+
+import numpy as np
+import pytest
+from conftest import body
+
+from modalview.drawing import outline
+from modalview.drawing.sheet import sheet_geometry
+from modalview.model.parts import Model, Motion
+
+
+@pytest.mark.parametrize("columns", [1, 6])
+def test_bodies_of_a_lattice_are_sized_the_same_whether_compared_or_by_levels(columns, monkeypatch):
+    bodies = tuple(body(f"b{n}", 1.5 * (n % columns), 1.2 * (n // columns)) for n in range(12 * columns))
+    model = Model(motion=Motion.PLANE, bodies=bodies)
+    compared = sheet_geometry(model, 900, 700).boxes
+    monkeypatch.setattr(outline, "COMPARED", 0)
+    assert sheet_geometry(model, 900, 700).boxes == pytest.approx(compared)
+
+
+def test_bodies_between_levels_stay_apart_from_their_neighbours(monkeypatch):
+    monkeypatch.setattr(outline, "COMPARED", 0)
+    places = np.random.default_rng(3).uniform(0, 9, (30, 2))
+    bodies = tuple(body(f"b{n}", *place) for n, place in enumerate(places.tolist()))
+    boxes = sheet_geometry(Model(motion=Motion.PLANE, bodies=bodies), 900, 700).boxes
+    low, high = boxes[:, None, :2], boxes[None, :, 2:]
+    meet = ((low < high) & (boxes[None, :, :2] < boxes[:, None, 2:])).all(axis=2)
+    assert meet.sum() == len(bodies)  # each only itself
