@@ -26,6 +26,7 @@ from modalview.study.near import require_all_modes
 
 Prepare = Callable[[argparse.ArgumentParser], None]
 PICTURES = ("sheet", "scale", "mode", "plane")
+VIEWS = ("turned", "front", "side", "top")
 
 
 def _file(words: argparse.Namespace) -> tuple[Path, Model]:
@@ -130,6 +131,7 @@ def _prepare_picture(parser: argparse.ArgumentParser) -> None:
     parser.add_argument("--mode", type=whole, metavar="N", help="the mode shown, from 1 (with --of mode)")
     parser.add_argument("--size", default="2400x1600", metavar="WxH", help="in pixels (default: 2400x1600)")
     parser.add_argument("--dark", action="store_true", help="dark colours")
+    parser.add_argument("--view", choices=VIEWS, help="of a model in space (default: turned)")
     parser.set_defaults(run=run_picture)
 
 

@@ -15,8 +15,9 @@ from modalview.drawing.primitives import Drawing
 from modalview.drawing.scale import scale_drawing
 from modalview.drawing.scalecontent import scale_content
 from modalview.drawing.sheet import sheet_drawing, sheet_geometry
+from modalview.drawing.view import Viewpoint
 from modalview.errors import KeepclearError, UsageError
-from modalview.model.parts import Model
+from modalview.model.parts import Model, Motion
 from modalview.study import FoundMode, Outlook, Request, Solution, look, solve
 from modalview.study.damped import damped
 
@@ -55,8 +56,10 @@ def _size(text: str) -> tuple[int, int]:
 def _drawing(model: Model, words: argparse.Namespace, width: int, height: int) -> Drawing:
     if words.mode is not None and words.of != "mode":
         raise UsageError("--mode goes with --of mode")
+    viewpoint = _viewpoint(model, words)
     if words.of == "sheet":
-        return sheet_drawing(sheet_geometry(model, width, height), _title_at_rest(model))
+        geometry = sheet_geometry(model, width, height, viewpoint=viewpoint)
+        return sheet_drawing(geometry, _title_at_rest(model))
     solution = solve(Request(model, progress=progress))
     if words.of == "plane":
         damping = damped(Request(model), solution)
@@ -66,9 +69,22 @@ def _drawing(model: Model, words: argparse.Namespace, width: int, height: int) -
         scale = scale_drawing(scale_content(solution.outlook, solution), width, height - CAPTION)
         return captioned(scale.drawing, f"Frequency scale · {model.title or 'untitled'}")
     mode = wanted_mode(solution, words.mode)
-    geometry = sheet_geometry(model, width, height - CAPTION)
+    geometry = sheet_geometry(model, width, height - CAPTION, viewpoint=viewpoint)
     drawing = moved(geometry, mode.motion, 1.0, 0.0, _title(solution.outlook))
     return captioned(drawing, mode_caption(mode))
+
+
+def _viewpoint(model: Model, words: argparse.Namespace) -> Viewpoint:
+    """Return from where a space model is to be seen; only a sheet or a mode of one has a choice."""
+    if words.view is None:
+        return Viewpoint.TURNED
+    if words.of not in ("sheet", "mode"):
+        raise UsageError("--view goes with the sheet and with --of mode")
+    if model.motion is not Motion.SPACE:
+        raise UsageError(
+            f"--view {words.view}: only a model in space has several views; this one is {model.motion}"
+        )
+    return Viewpoint(words.view)
 
 
 def _title(outlook: Outlook) -> TitleLines:

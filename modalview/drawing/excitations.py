@@ -6,6 +6,7 @@ from dataclasses import dataclass
 import numpy as np
 
 from modalview.drawing.captions import excitation_line
+from modalview.drawing.endon import sight_segments
 from modalview.drawing.geometry import SheetGeometry
 from modalview.drawing.labels import Spot, round_about
 from modalview.drawing.layout import point
@@ -13,6 +14,7 @@ from modalview.drawing.primitives import Floats
 from modalview.drawing.symbols import arrow, turning_arrow
 from modalview.model.parts import Excitation, Model, Motion
 
+END_ON = 0.1  # of an arrow: where less than this is seen it points to or from the eye
 LENGTH = 40.0  # pixels of a straight arrow
 MOST_LINES = 4  # of text at one place
 
@@ -88,16 +90,23 @@ def _push(geometry: SheetGeometry, body: int, arm: Floats, way: str | Floats, te
     x1, y1, x2, y2 = geometry.boxes[body].tolist()
     middle = (x1 + x2) / 2
     around = round_about((x1, y1, x2 - x1, y2 - y1), 8.0)
-    on_body = bool(arm.any()) or (geometry.model.motion is Motion.SPACE and _turns(way))
     turning = _turns(way)
+    step = np.zeros(2) if turning else _step(geometry, way)
+    sighted = not turning and not step.any()  # along the line of sight of a straight view
+    on_body = bool(arm.any()) or sighted or (geometry.model.motion is Motion.SPACE and turning)
     if geometry.train is not None:
         segments = turning_arrow((middle, y2 - 8.0), 22.0, np.radians(205), np.radians(130))
         spots = [Spot(middle, y2 + step, 0, 1) for step in range(22, 160, 8)]
         spots += [Spot(middle, y1 - step, 0, -1) for step in range(8, 160, 8)] + around
     elif on_body:  # a place on the body: the arrow is there, the text beside the body
         here = geometry.points.rest[geometry.centres[body]] + geometry.view.steps(arm)
-        segments = _at_place(here, None if turning else _step(geometry, way))
-        segments = segments if arm.any() else segments[2:]  # the centre of gravity has its own mark
+        if sighted:
+            towards = float(_direction(geometry, way) @ geometry.view.towards) > 0
+            x, y = here.tolist()
+            segments = sight_segments((x, y if arm.any() else y - 18.0), towards=towards)
+        else:
+            segments = _at_place(here, None if turning else step)
+            segments = segments if arm.any() else segments[2:]  # the centre of gravity has its own mark
         spots = [Spot(float(here[0]), y1 - 8, 0, -1), Spot(middle, y1 - 22, 0, -1), *around]
     elif turning:
         half = min(0.36 * (x2 - x1), 46.0)
@@ -105,7 +114,7 @@ def _push(geometry: SheetGeometry, body: int, arm: Floats, way: str | Floats, te
         segments = turning_arrow((middle, y1 - 12 + radius / 2), radius, np.radians(150), np.radians(-120))
         spots = [Spot(middle, y1 - 18 - radius / 2, 0, -1), *around]
     else:
-        step = _step(geometry, way) * LENGTH
+        step = step * LENGTH
         start = np.array([middle - step[0] / 2, y1 - 8 + min(0.0, -LENGTH if step[1] > 0 else 0.0)])
         segments = arrow(start[None], step[None])
         spots = [Spot(middle + 10, y1 - 30, 1, 0), Spot(middle - 10, y1 - 30, -1, 0)]
@@ -134,7 +143,18 @@ def _at_place(here: Floats, step: Floats | None) -> Floats:
 
 
 def _step(geometry: SheetGeometry, way: str | Floats) -> Floats:
-    """Return the unit step on the sheet along a direction; upwards where there is none."""
+    """Return the unit step on the sheet along a direction; zero where that is along the line of sight."""
+    world = _direction(geometry, way)
+    step = geometry.view.steps(world)
+    length = float(np.hypot(*step))
+    if geometry.view.straight and length < END_ON * geometry.view.scale_x * float(np.linalg.norm(world)):
+        return np.zeros(2)
+    unit: Floats = step / (length or 1.0)
+    return unit
+
+
+def _direction(geometry: SheetGeometry, way: str | Floats) -> Floats:
+    """Return a step of the world along a direction; upwards where there is none."""
     upright = 2 if geometry.model.motion is Motion.SPACE else 1
     world = np.eye(3)[upright]
     if not isinstance(way, str):
@@ -146,6 +166,4 @@ def _step(geometry: SheetGeometry, way: str | Floats) -> Floats:
         world = np.array([np.cos(angle), np.sin(angle), 0.0])
     elif way.lstrip("+-") in ("x", "y", "z"):
         world = np.eye(3)["xyz".index(way.lstrip("+-"))] * (-1.0 if way.startswith("-") else 1.0)
-    step = geometry.view.steps(world)
-    unit: Floats = step / (np.hypot(*step) or 1.0)
-    return unit
+    return np.asarray(world)

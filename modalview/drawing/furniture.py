@@ -5,10 +5,11 @@ from dataclasses import dataclass
 import numpy as np
 
 from modalview.drawing.captions import in_two, shortened
+from modalview.drawing.endon import sight_segments
 from modalview.drawing.primitives import Anchor, Box, Drawing, Floats, Item, Lines, Role, Size, Text
 from modalview.drawing.symbols import arrow
 from modalview.drawing.textsize import text_width
-from modalview.drawing.view import projection
+from modalview.drawing.view import Viewpoint, projection
 from modalview.model.parts import FREEDOMS, Model, Motion
 
 GRID_STEP = 24.0
@@ -20,6 +21,7 @@ BLOCK = 2 * ROW
 STRIP = 21.0  # height of the block as a strip of one line
 MOST_SHARE = 0.13  # of the sheet: a block that would take more is a strip
 PADDING = 14.0  # of a cell, both sides
+SWITCH = 200.0  # pixels beside the axes of a space model for the switch of the views
 AXES = 60.0  # pixels that the axes keep beside the strip
 TURNING = "rotation about the shafts"
 TITLE_SHARE = (0.45, 0.68)  # of the block, for the left column: least and most
@@ -146,11 +148,14 @@ def grid(width: float, height: float) -> Lines:
     return Lines(np.vstack([upright, level]), Role.GRID, 1.0)
 
 
-def axes(motion: Motion, text_scale: float, room: float = np.inf) -> tuple[tuple[Item, ...], Floats]:
-    """Return the arrows of the model's axes at the top left, and the rectangle (1, 4) they take.
+def axes(
+    motion: Motion, text_scale: float, room: float = np.inf, viewpoint: Viewpoint = Viewpoint.TURNED
+) -> tuple[tuple[Item, ...], Floats]:
+    """Return the arrows of the model's axes at the top left, and the rectangles (n, 4) they take.
 
     What is said beside the axis of a shaft train is left out where it would pass ``room``, pixels from the
-    left.
+    left. Seen straight, the axis to or from the eye is a dot or a cross in a circle. In space the rectangle
+    keeps room for the switch of the views.
     """
     length = 34.0
     shown = {
@@ -159,13 +164,20 @@ def axes(motion: Motion, text_scale: float, room: float = np.inf) -> tuple[tuple
         Motion.PLANE: ("x", "y"),
         Motion.SPACE: ("x", "y", "z"),
     }[motion]
-    steps = projection(motion)[:, ["xyz".index(name) for name in shown]].T * np.array([length, -length])
+    matrix = projection(motion, viewpoint)
+    steps = matrix[:, ["xyz".index(name) for name in shown]].T * np.array([length, -length])
     low = np.minimum(steps.min(axis=0), 0.0)
     origin = np.array([26.0, 30.0 * text_scale]) - low
     starts = np.tile(origin, (len(steps), 1))
-    items: list[Item] = [Lines(arrow(starts, steps), Role.INK, 1.3)]
+    seen = steps.any(axis=1)
+    items: list[Item] = [Lines(arrow(starts[seen], steps[seen]), Role.INK, 1.3)]
     for name, step in zip(shown, steps, strict=True):
         x, y = origin + step * (1 + 9.0 * text_scale / max(float(np.hypot(*step)), 1.0))
+        if not step.any():
+            towards = float(np.cross(*matrix)["xyz".index(name)]) > 0
+            end = sight_segments(tuple(origin.tolist()), towards=towards, radius=5.0)
+            items.append(Lines(end, Role.INK, 1.3))
+            x, y = x - 11.0 * text_scale, y + 7.0 * text_scale
         items.append(Text(float(x), float(y), name, Role.INK, Size.SMALL, Anchor.MIDDLE))
     high = origin + np.maximum(steps.max(axis=0), 0.0) + 20.0 * text_scale
     if motion is Motion.SHAFT_TRAIN:
@@ -174,7 +186,14 @@ def axes(motion: Motion, text_scale: float, room: float = np.inf) -> tuple[tuple
         if x + wide <= room:
             items.append(Text(x, float(origin[1]), TURNING, Role.MUTED, Size.SMALL))
             high[0] += wide
-    return tuple(items), np.array([[0.0, 0.0, *high]])
+    rooms = [[0.0, 0.0, *high]]
+    if motion is Motion.SPACE:
+        rooms.append([0.0, 0.0, float(high[0]) + SWITCH * text_scale, 34.0 * text_scale])
+    if viewpoint is not Viewpoint.TURNED:
+        y = float(high[1]) + 4.0 * text_scale
+        items.append(Text(14.0, y, f"{viewpoint} view", Role.MUTED, Size.SMALL))
+        rooms[0][3] = y + 10.0 * text_scale
+    return tuple(items), np.array(rooms)
 
 
 def captioned(drawing: Drawing, caption: str) -> Drawing:

@@ -1,6 +1,6 @@
 """The model on the sheet as arrays of points, each fixed to a body, so that motion is one product."""
 
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 
 import numpy as np
 
@@ -10,7 +10,7 @@ from modalview.drawing.marks import body_marks
 from modalview.drawing.outline import Outlines, faces, outlines
 from modalview.drawing.primitives import Floats, Text
 from modalview.drawing.symbols import Symbol
-from modalview.drawing.view import View, fitted, projection
+from modalview.drawing.view import View, Viewpoint, fitted, projection
 from modalview.model.parts import Gear, Model, Motion
 
 Indices = np.ndarray[tuple[int, ...], np.dtype[np.int_]]
@@ -54,6 +54,8 @@ class LinkGroup:
         Drawn over the bodies.
     joint : bool
         Between two touching bodies.
+    end_on : bool
+        Along the line of sight of a straight view.
     spans : array (n, 3) or None
         From end to end, world; of beams, whose shape follows the rotation of their ends.
     """
@@ -63,6 +65,7 @@ class LinkGroup:
     on_top: bool
     joint: bool
     spans: Floats | None = None
+    end_on: bool = False
 
 
 @dataclass(frozen=True, slots=True, eq=False)
@@ -114,6 +117,10 @@ class SheetGeometry:
     grow : float
         Times the sizes of symbols; below 1 in a small picture.
     view : View
+    outline : Outlines
+        Of the bodies, world.
+    places : Layout
+        Of bodies and ends of links, world.
     points : Points
     faces : tuple of array (n, corners) of int
         Indices of points, in the order of painting.
@@ -128,8 +135,8 @@ class SheetGeometry:
         Pixels, in the order of the model.
     link_bodies : array (links, 2) of int
         Bodies of the ends; GROUND for none.
-    links_on_top : array (links,) of bool
-        Links drawn over the bodies.
+    links_on_top, links_end_on : array (links,) of bool
+        Links drawn over the bodies; those along the line of sight.
     train : Train or None
         In a shaft train.
     marks : tuple of Mark
@@ -152,6 +159,8 @@ class SheetGeometry:
     text_scale: float
     grow: float
     view: View
+    outline: Outlines
+    places: Layout
     points: Points
     faces: tuple[Indices, ...]
     links: tuple[LinkGroup, ...]
@@ -161,6 +170,7 @@ class SheetGeometry:
     link_ends: Floats
     link_bodies: Indices
     links_on_top: np.ndarray[tuple[int], np.dtype[np.bool_]]
+    links_end_on: np.ndarray[tuple[int], np.dtype[np.bool_]]
     train: Train | None
     marks: tuple[Mark, ...]
     reach: float
@@ -196,7 +206,7 @@ def bare_geometry(
     model: Model,
     size: tuple[float, float],
     area: tuple[float, float, float, float],
-    view: View | None = None,
+    view: View | Viewpoint = Viewpoint.TURNED,
     grow: float = 1.0,
     text_scale: float = 1.0,
 ) -> SheetGeometry:
@@ -208,20 +218,20 @@ def bare_geometry(
     size : width and height of the sheet, pixels
     area : x, y, width, height, pixels
         Where the model is fitted in.
-    view : View or None
-        None fits.
+    view : View or Viewpoint
+        A viewpoint fits the model in.
     grow, text_scale : float
     """
     places = layout(model)
     view, outline = _fit(model, places, area, view, grow)
     collector = _Collector()
-    faces_of = [faces(outline, number, model.motion) for number in range(len(model.bodies))]
+    faces_of = [faces(outline, number, model.motion, view.viewpoint) for number in range(len(model.bodies))]
     boxes, fronts = _boxes(places, view, faces_of)
     face_points = _collect_faces(collector, places, view, faces_of)
     centres = collector.add(
         view.to_pixels(places.centres), np.zeros_like(places.centres), np.arange(len(places.centres))
     )
-    links = link_ends(model, places, view, boxes, grow)
+    links = link_ends(model, places, view, boxes, grow, straight=view.straight)
     groups = _collect_links(collector, places, view, links, model.motion)
     marks = _collect_marks(collector, model, places, view, outline)
     train = _train(model, places, view, boxes, grow) if model.motion is Motion.SHAFT_TRAIN else None
@@ -232,6 +242,8 @@ def bare_geometry(
         text_scale=text_scale,
         grow=grow,
         view=view,
+        outline=outline,
+        places=places,
         points=collector.points(),
         faces=face_points,
         links=groups,
@@ -241,6 +253,7 @@ def bare_geometry(
         link_ends=links.ends,
         link_bodies=places.end_bodies,
         links_on_top=links.on_top,
+        links_end_on=links.end_on,
         train=train,
         marks=marks,
         reach=_reach(links, train, grow),
@@ -248,11 +261,16 @@ def bare_geometry(
 
 
 def _fit(
-    model: Model, places: Layout, area: tuple[float, float, float, float], view: View | None, grow: float
+    model: Model,
+    places: Layout,
+    area: tuple[float, float, float, float],
+    view: View | Viewpoint,
+    grow: float,
 ) -> tuple[View, Outlines]:
-    if view is not None:
+    if isinstance(view, View):
         return view, outlines(model, places, view, grow)
-    matrix = projection(model.motion)
+    viewpoint = view if model.motion is Motion.SPACE else Viewpoint.TURNED
+    matrix = projection(model.motion, viewpoint)
     world = np.concatenate([places.centres, places.ends.reshape(-1, 3)])
     largest = _largest(places, model.motion, grow) if places.stretchable else (np.inf, np.inf)
     x, y, width, height = area
@@ -261,13 +279,13 @@ def _fit(
     outline = outlines(model, places, found, grow)
     for _ in range(ROUNDS):
         corners = [
-            places.centres[number] + faces(outline, number, model.motion).reshape(-1, 3)
+            places.centres[number] + faces(outline, number, model.motion, viewpoint).reshape(-1, 3)
             for number in range(len(model.bodies))
         ]
         flat = np.concatenate([world, *corners]) @ matrix.T
         found = fitted(flat, matrix, area, stretchable=places.stretchable, largest=largest)
         outline = outlines(model, places, found, grow)
-    return found, outline
+    return replace(found, viewpoint=viewpoint), outline
 
 
 def _largest(places: Layout, motion: Motion, grow: float) -> tuple[float, float]:
@@ -299,8 +317,10 @@ def _collect_faces(
     collector: _Collector, places: Layout, view: View, faces_of: list[Floats]
 ) -> tuple[Indices, ...]:
     """Add the faces' corners, the bodies furthest from the eye first."""
-    towards = np.cross(view.matrix[0], view.matrix[1])
-    order = np.argsort(places.centres @ towards, kind="stable").tolist()
+    depth = places.centres @ view.towards
+    if len(faces_of) and len(faces_of[0]) == 1:  # what is seen of a body is its nearest face
+        depth = depth + np.array([face.reshape(-1, 3)[0] @ view.towards for face in faces_of])
+    order = np.argsort(depth, kind="stable").tolist()
     runs: list[list[Indices]] = []
     for number in order:
         arms = faces_of[number]
@@ -311,6 +331,15 @@ def _collect_faces(
         else:
             runs.append([indices])
     return tuple(np.vstack(run) for run in runs)
+
+
+# On top, joint, end-on.
+_KINDS_OF_GROUP = (
+    (False, False, False),
+    (True, False, False),
+    (True, True, False),
+    (True, False, True),
+)
 
 
 def _collect_links(
@@ -327,11 +356,13 @@ def _collect_links(
     groups = []
     for symbol in Symbol:
         same = np.array([found is symbol for found in links.symbols])
-        for on_top, joint in ((False, False), (True, False), (True, True)):
-            chosen = np.flatnonzero(same & (links.on_top == on_top) & (links.joints == joint))
+        for on_top, joint, end_on in _KINDS_OF_GROUP:
+            alike = (links.on_top == on_top) & (links.joints == joint) & (links.end_on == end_on)
+            chosen = np.flatnonzero(same & alike)
             if len(chosen):
-                spans = _spans(places, view, links, chosen, motion) if symbol is Symbol.BEAM else None
-                groups.append(LinkGroup(symbol, indices[chosen], on_top, joint, spans))
+                bends = symbol is Symbol.BEAM and not end_on
+                spans = _spans(places, view, links, chosen, motion) if bends else None
+                groups.append(LinkGroup(symbol, indices[chosen], on_top, joint, spans, end_on))
     return tuple(groups)
 
 
@@ -387,5 +418,6 @@ def _reach(links: LinkEnds, train: Train | None, grow: float) -> float:
     """Return pixels of the largest motion: readable, and short of turning springs inside out."""
     if train is not None:
         return TWIST * grow
-    lengths = np.hypot(*(links.ends[~links.joints, 1] - links.ends[~links.joints, 0]).T)
+    long = ~links.joints & ~links.end_on
+    lengths = np.hypot(*(links.ends[long, 1] - links.ends[long, 0]).T)
     return float(np.clip(0.42 * lengths.min(initial=70.0 * grow), 9.0 * grow, 28.0 * grow))

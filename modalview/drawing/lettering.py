@@ -85,7 +85,7 @@ def _taken(geometry: SheetGeometry) -> Floats:
     sheet = (geometry.width, geometry.height)
     width, height = title_size(geometry.model.title, sheet, geometry.text_scale)
     corner = [geometry.width - MARGIN - width - 4, 0.0, geometry.width, MARGIN + height + 4]
-    arrows = axes(geometry.model.motion, geometry.text_scale, corner[0])[1]
+    arrows = axes(geometry.model.motion, geometry.text_scale, corner[0], geometry.view.viewpoint)[1]
     taken = [np.array([corner]), arrows, geometry.boxes]
     taken += [_link_boxes(geometry)[0], _foot_boxes(geometry)]
     train = geometry.train

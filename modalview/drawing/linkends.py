@@ -1,5 +1,6 @@
 """Where links are seen to begin and end: at the edges of bodies, and long enough to be read."""
 
+from collections import defaultdict
 from dataclasses import dataclass
 
 import numpy as np
@@ -17,7 +18,10 @@ Truths = npt.NDArray[np.bool_]
 SHORTEST = 46.0  # pixels of a link to the ground
 JOINT = 15.0  # half length of a link whose ends coincide on two bodies
 LANE = 26.0  # pixels between links that join the same two parts
+BESIDE = 20.0  # the same between links that stand one behind the other in a straight view
 COINCIDENT = 8.0  # pixels
+OVERLAP = 6.0  # pixels of the net on which links of a straight view count as drawn over each other
+ALONG = 0.9  # of a unit step: what has this share along the line of sight is seen end-on
 
 
 @dataclass(frozen=True, slots=True, eq=False)
@@ -33,47 +37,99 @@ class LinkEnds:
         Links that touch the front of a body, drawn over it.
     joints : array (links,) of bool
         Links between touching bodies, drawn over both.
+    end_on : array (links,) of bool
+        Links of a straight view that lie along the line of sight: both ends are at one place.
     """
 
     symbols: tuple[Symbol, ...]
     ends: Floats
     on_top: np.ndarray[tuple[int], np.dtype[np.bool_]]
     joints: np.ndarray[tuple[int], np.dtype[np.bool_]]
+    end_on: np.ndarray[tuple[int], np.dtype[np.bool_]]
 
 
-def link_ends(model: Model, places: Layout, view: View, boxes: Floats, grow: float = 1.0) -> LinkEnds:
+def link_ends(
+    model: Model, places: Layout, view: View, boxes: Floats, grow: float = 1.0, *, straight: bool = False
+) -> LinkEnds:
     """Return the links' ends in pixels.
 
     Parameters
     ----------
     boxes : array (bodies, 4)
         x1, y1, x2, y2 of the bodies on the sheet, pixels.
+    straight : bool
+        Whether a space model is seen along one of its axes.
     """
     ends = view.to_pixels(places.ends)
-    sideways = places.lanes[:, None] * LANE * grow * _across(ends)
+    pulls = [_pull(link, model.motion, view) for link in model.links]
+    end_on = _end_on(places, ends, view, pulls, COINCIDENT * grow) if straight else np.zeros(len(ends), bool)
+    lanes = _overlapping(ends, end_on) if straight else places.lanes
+    sideways = lanes[:, None] * (BESIDE if straight else LANE) * grow * _across(ends)
     if model.motion is not Motion.SHAFT_TRAIN:
         ends += sideways[:, None]
     joints = np.zeros(len(ends), dtype=bool)
-    on_top = _in_front(places) if model.motion is Motion.SPACE else joints.copy()
+    on_top = end_on | _in_front(places, view, straight=straight) if _space(model) else joints.copy()
     for number, link in enumerate(model.links):
-        pair = places.end_bodies[number]
-        if GROUND in pair:
-            _lengthen(ends[number], pair, boxes, _pull(link, model.motion), SHORTEST * grow)
+        pair, pull = places.end_bodies[number], pulls[number]
+        pull = pull if pull is not None and pull.any() else None
+        if end_on[number]:
+            ends[number] = ends[number].mean(axis=0)
+        elif GROUND in pair:
+            _lengthen(ends[number], pair, boxes, pull, SHORTEST * grow)
         elif np.hypot(*(ends[number, 1] - ends[number, 0])) < COINCIDENT * grow and not isinstance(
             link, RigidLink
         ):
             joints[number] = on_top[number] = True
-            pull = _pull(link, model.motion)
             along = np.array([1.0, 0.0]) if pull is None else pull
             middle = ends[number].mean(axis=0)
             ends[number] = middle - JOINT * grow * along, middle + JOINT * grow * along
-    if model.motion is not Motion.SPACE:
+    if not _space(model):
         _clip(ends, places.end_bodies, boxes, ~joints)
-    return LinkEnds(tuple(_symbol(link, model.motion) for link in model.links), ends, on_top, joints)
+    symbols = tuple(_symbol(link, model.motion) for link in model.links)
+    return LinkEnds(symbols, ends, on_top, joints, end_on)
 
 
-def _in_front(places: Layout) -> np.ndarray[tuple[int], np.dtype[np.bool_]]:
-    """Return which links to the ground hold their body on the side towards the eye (least y)."""
+def _space(model: Model) -> bool:
+    return model.motion is Motion.SPACE
+
+
+def _end_on(
+    places: Layout, ends: Floats, view: View, pulls: list[Floats | None], near: float
+) -> np.ndarray[tuple[int], np.dtype[np.bool_]]:
+    """Return which links lie along the line of sight.
+
+    A direction of its own comes before the ends. A link to the ground without either stands upright.
+    """
+    steps = places.ends[:, 1] - places.ends[:, 0]
+    seen = np.hypot(*(ends[:, 1] - ends[:, 0]).T)
+    deep = np.abs(steps @ view.towards) > 0
+    deep |= (places.end_bodies == GROUND).any(axis=1) & (abs(view.towards[2]) > ALONG) & ~steps.any(axis=1)
+    own = np.array([pull is not None for pull in pulls], dtype=bool)
+    along = np.array([pull is not None and not pull.any() for pull in pulls], dtype=bool)
+    return np.asarray((seen < near) & np.where(own, along, deep))
+
+
+def _overlapping(ends: Floats, end_on: Truths) -> Floats:
+    """Return sideways places (n,), as of lanes, of links that would be drawn over each other."""
+    groups: dict[tuple[int, ...], list[int]] = defaultdict(list)
+    for number, (one, other) in enumerate(np.rint(ends / OVERLAP).astype(int).tolist()):
+        first, last = sorted((one, other))
+        groups[(*first,) if end_on[number] else (*first, *last)].append(number)
+    lanes = np.zeros(len(ends))
+    for members in groups.values():
+        lanes[members] = np.arange(len(members)) - (len(members) - 1) / 2
+    return lanes
+
+
+def _in_front(places: Layout, view: View, *, straight: bool) -> np.ndarray[tuple[int], np.dtype[np.bool_]]:
+    """Return which links to the ground hold their body on the side towards the eye (least y, if turned)."""
+    if straight and len(places.centres):
+        held = np.where(places.end_bodies[:, 0] != GROUND, 0, 1)
+        rows = np.arange(len(held))
+        bodies = places.end_bodies[rows, held]
+        arms = places.ends[rows, held] - places.centres[bodies]
+        grounded = (places.end_bodies == GROUND).any(axis=1)
+        return np.asarray(grounded & (bodies >= 0) & (arms @ view.towards > 0))
     front = np.zeros(len(places.ends), dtype=bool)
     for number, pair in enumerate(places.end_bodies.tolist()):
         for side in (0, 1):
@@ -97,24 +153,28 @@ def _across(ends: Floats) -> Floats:
     return across
 
 
-def _pull(link: Link, motion: Motion) -> Floats | None:
-    """Return the unit step on the sheet along which a link acts, if it says so."""
+def _pull(link: Link, motion: Motion, view: View) -> Floats | None:
+    """Return the unit step on the sheet along which a link acts, if it says so; zero where seen end-on."""
     direction = getattr(link, "direction", None)
     if direction is None or motion not in (Motion.PLANE, Motion.SPACE):
         return None
-    upright = "z" if motion is Motion.SPACE else "y"
     if isinstance(direction, str):
-        if direction.lstrip("+-") == "x":
-            return np.array([1.0, 0.0])
-        if direction.lstrip("+-") == upright:
-            return np.array([0.0, 1.0])
+        bare = direction.lstrip("+-")
         if direction.endswith("deg"):
             angle = np.radians(float(direction.removesuffix("deg")))
-            return np.array([np.cos(angle), -np.sin(angle)])
-        return np.array([0.7, -0.7])
-    step = np.array([direction[0], -direction[-1]])
+            world = np.array([np.cos(angle), np.sin(angle), 0.0])
+        else:
+            world = np.eye(3)["xyz".index(bare)]
+    else:
+        world = np.zeros(3)
+        world[: len(direction)] = direction
+        world /= np.linalg.norm(world) or 1.0
+    step = (view.matrix @ world) * np.array([1.0, -1.0])
     length = float(np.hypot(*step))
-    return step / length if length else None
+    if length <= 1 - ALONG:
+        return np.zeros(2)
+    downwards = isinstance(direction, str) and not direction.endswith("deg") and step[1] < -abs(step[0])
+    return np.asarray((-step if downwards else step) / length)
 
 
 def _lengthen(

@@ -4,6 +4,7 @@ from dataclasses import replace
 
 import numpy as np
 
+from modalview.drawing.endon import end_on_items
 from modalview.drawing.furniture import MARGIN, TitleLines, axes, grid, title_block, title_size
 from modalview.drawing.geometry import LinkGroup, SheetGeometry
 from modalview.drawing.layout import GROUND
@@ -68,6 +69,7 @@ def _bodies(geometry: SheetGeometry, points: Floats) -> list[Item]:
 def ground_items(geometry: SheetGeometry, *, on_top: bool = False) -> tuple[Item, ...]:
     """Return the hatched ground under the feet behind, or before, the bodies; it looks away from the link."""
     chosen = geometry.links_on_top == on_top
+    chosen &= ~geometry.links_end_on  # they hatch their own ground
     rows, sides = np.nonzero((geometry.link_bodies == GROUND) & chosen[:, None])
     feet = geometry.link_ends[rows, sides]
     step = feet - geometry.link_ends[rows, 1 - sides]
@@ -112,7 +114,7 @@ def paper_items(geometry: SheetGeometry, title: TitleLines | None) -> tuple[Item
     room = geometry.width
     if title is not None:
         room -= MARGIN + title_size(title.title, sheet, text_scale)[0]
-    shown = (grid(*sheet), *axes(geometry.model.motion, text_scale, room)[0])
+    shown = (grid(*sheet), *axes(geometry.model.motion, text_scale, room, geometry.view.viewpoint)[0])
     return shown if title is None else shown + title_block(title, sheet, text_scale)
 
 
@@ -145,6 +147,8 @@ def _body_marks(geometry: SheetGeometry, points: Floats) -> list[Item]:
 
 def _link(geometry: SheetGeometry, group: LinkGroup, points: Floats, slopes: Floats | None) -> list[Item]:
     grow, symbol, ends = geometry.grow, group.symbol, points[group.ends]
+    if group.end_on:
+        return [*end_on_items(symbol, ends, geometry.points.bodies[group.ends] == GROUND, grow)]
     if slopes is not None:
         rest = geometry.points.rest[group.ends]
         return [Lines(bent(rest, ends - rest, slopes), Role.INK, max(BEAM_WIDTH * grow, 1.0))]

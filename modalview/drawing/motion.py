@@ -1,11 +1,12 @@
 """The sheet in motion: a mode's displacement of every point once, then one product per frame."""
 
-from dataclasses import dataclass
+from dataclasses import dataclass, field
 from typing import Any
 
 import numpy as np
 import numpy.typing as npt
 
+from modalview.drawing.endon import sight_segments
 from modalview.drawing.furniture import TitleLines, sheet_of
 from modalview.drawing.geometry import LinkGroup, SheetGeometry
 from modalview.drawing.layout import GROUND
@@ -24,8 +25,10 @@ from modalview.drawing.primitives import Circles, Drawing, Floats, Item, Lines, 
 from modalview.drawing.symbols import arrow, turning_arrow
 from modalview.model.parts import Motion
 
+Truths = npt.NDArray[np.bool_]
 Phased = npt.NDArray[np.inexact[Any]]  # real, or complex where parts move out of step
 
+NEARING = 0.1  # of the largest motion: more than this to or from the eye is marked
 STILL = 0.02  # of the largest motion: below it a part counts as standing still
 DIAL_SWING = np.radians(55.0)  # of the largest rotation at amplitude 1
 ARROW = 40.0  # pixels of the largest motion's arrow
@@ -48,6 +51,9 @@ class Pose:
         Largest motion of any point of the body over the largest of all, 0..1.
     slopes : tuple of array (n, 2, 2) or None
         For each group of links: of beams, pixels that the rotation of each end alone would move the other.
+    nearing : array (bodies,)
+        Of a straight view: how far the centre of gravity moves towards the eye, over the largest motion of
+        any point, -1..1.
     """
 
     steps: Phased
@@ -55,6 +61,7 @@ class Pose:
     turns: Phased
     sizes: Floats
     slopes: tuple[Phased | None, ...] = ()
+    nearing: Phased = field(default_factory=lambda: np.zeros(0))
 
 
 def pose(geometry: SheetGeometry, motion: Phased) -> Pose:
@@ -85,16 +92,30 @@ def pose(geometry: SheetGeometry, motion: Phased) -> Pose:
     world[points.bodies == GROUND] = 0.0
     steps = geometry.view.steps(world)
     lengths = np.hypot(*np.abs(steps).T)
+    straight = geometry.view.straight
+    if straight:  # what moves along the line of sight is not still
+        lengths = geometry.view.scale_x * np.linalg.norm(np.abs(world), axis=1)
     largest = float(lengths.max(initial=0.0)) or 1.0
     sizes = np.zeros(count)
     moving = points.bodies != GROUND
     np.maximum.at(sizes, points.bodies[moving], lengths[moving] / largest)
-    about = 2 if geometry.model.motion is not Motion.SPACE else 1
-    turns = np.zeros(count) if geometry.model.motion is Motion.SPACE else _over_largest(motion[:, 3 + about])
+    turns = np.zeros(count)
+    if geometry.model.motion is not Motion.SPACE:
+        turns = _over_largest(motion[:, 5])
+    elif straight:
+        turns = _seen_turns(geometry, motion, largest)
+    nearing = geometry.view.scale_x * (world[geometry.centres] @ geometry.view.towards) / largest
     times = geometry.reach / largest
     steps = times * steps
     slopes = tuple(_slopes(geometry, group, motion, times) for group in geometry.links)
-    return Pose(steps, steps[geometry.centres], turns, sizes, slopes)
+    return Pose(steps, steps[geometry.centres], turns, sizes, slopes, nearing if straight else 0 * nearing)
+
+
+def _seen_turns(geometry: SheetGeometry, motion: Phased, largest: float) -> Phased:
+    """Return rotation about the line of sight: what it moves at half a body's size, over the largest."""
+    half = np.linalg.norm(geometry.outline.high - geometry.outline.low, axis=1) / 2
+    about: Phased = geometry.view.scale_x * half * (motion[:, 3:] @ geometry.view.towards) / largest
+    return np.where(np.abs(about) > 1.0, about / np.maximum(np.abs(about), 1.0), about)
 
 
 def _as_motion(motion: Phased) -> Phased:
@@ -197,7 +218,17 @@ def _arrows(geometry: SheetGeometry, posed: Pose, factor: complex) -> tuple[Item
     start = beside - steps / 2
     items: tuple[Item, ...] = (Lines(arrow(start[long], steps[long]), Role.ACCENT, 2.0),)
     centres = geometry.points.rest[geometry.centres] + np.real(factor * posed.centre_steps)
+    items += _sight_arrows(beside, np.real(way * posed.nearing), moving)
     return items + _turn_arrows(centres[moving], 12.0, turns[moving])
+
+
+def _sight_arrows(beside: Floats, nearing: Floats, moving: Truths) -> tuple[Item, ...]:
+    """Draw a point or a cross in a circle for each body that moves to or from the eye."""
+    if not len(nearing):
+        return ()
+    chosen = np.flatnonzero(moving & (np.abs(nearing) > NEARING)).tolist()
+    marks = [sight_segments(tuple(beside[body].tolist()), towards=bool(nearing[body] > 0)) for body in chosen]
+    return (Lines(np.vstack(marks), Role.ACCENT, 1.8),) if marks else ()
 
 
 def _turn_arrows(centres: Floats, radius: float, turns: Floats) -> tuple[Item, ...]:

@@ -7,7 +7,7 @@ import numpy.typing as npt
 
 from modalview.drawing.layout import Layout
 from modalview.drawing.primitives import Floats
-from modalview.drawing.view import View
+from modalview.drawing.view import View, Viewpoint
 from modalview.model.gears import gear_ratio
 from modalview.model.parts import Body, Gear, InertiaTensor, Model, Motion
 
@@ -20,6 +20,10 @@ PAD = 22.0  # from the outermost attachment to the side of the body
 POINT = 5.0  # half side of a massless junction
 DISC_HALF_WIDTH = 13.0
 DISC_CORNERS = 28
+# How deep a body of a space model is drawn, which no file tells: to where links hold it on both sides and a
+# quarter more, else by the share of its width; the same in all views.
+DEPTH, BEYOND = 0.6, 1.25
+THIN = 0.15  # of its width: links closer to the middle than this do not tell how deep it is
 # Bodies up to here are compared each with each; of more, only a few pixels of each are to be seen anyway.
 COMPARED = 2000
 ROOM = 0.40  # share of the way to a neighbour's centre that a body may fill, along a row
@@ -58,20 +62,38 @@ def outlines(model: Model, places: Layout, view: View, grow: float = 1.0) -> Out
     low, high = _extents(model, places, view, shapes, grow)
     for number, body in enumerate(model.bodies):
         _as_drawn(body, model.motion, low[number], high[number])
+    if model.motion is Motion.SPACE:
+        _deepen(places, shapes, low, high)
     return Outlines(low, high, shapes)
 
 
-def faces(outline: Outlines, number: int, motion: Motion) -> Floats:
+def faces(outline: Outlines, number: int, motion: Motion, viewpoint: Viewpoint = Viewpoint.TURNED) -> Floats:
     """Return the visible faces (faces, corners, 3) of a body relative to its centre, world."""
     low, high = outline.low[number], outline.high[number]
     if motion is Motion.SPACE:
-        return _box_faces(low, high)
+        seen = _box_faces(low, high)
+        return seen if viewpoint is Viewpoint.TURNED else seen[_SEEN[viewpoint]][None]
     if outline.shapes[number] == "disc" and motion is Motion.PLANE:
         turns = np.linspace(0, 2 * np.pi, DISC_CORNERS, endpoint=False)
         radius = (high - low)[:2].mean() / 2
         return np.stack([radius * np.cos(turns), radius * np.sin(turns), 0 * turns], axis=1)[None]
     x0, y0, x1, y1 = low[0], low[1], high[0], high[1]
     return np.array([[[x0, y0, 0], [x1, y0, 0], [x1, y1, 0], [x0, y1, 0]]])
+
+
+def _deepen(places: Layout, shapes: tuple[str, ...], low: Floats, high: Floats) -> None:
+    """Give bodies of a space model their extent along y."""
+    least, most, _ = _arms(places)
+    wide = high[:, 0] - low[:, 0]
+    told = np.minimum(-least[:, 1], most[:, 1]) > THIN * wide
+    boxes = np.array([shape != "point" for shape in shapes], dtype=bool)
+    usual = np.where(told, 0.0, DEPTH / 2 * wide)
+    low[boxes, 1] = np.minimum(-usual, BEYOND * least[:, 1])[boxes]
+    high[boxes, 1] = np.maximum(usual, BEYOND * most[:, 1])[boxes]
+
+
+# Which of the faces below a straight view shows.
+_SEEN = {Viewpoint.TOP: 0, Viewpoint.SIDE: 1, Viewpoint.FRONT: 2}
 
 
 def _box_faces(low: Floats, high: Floats) -> Floats:
@@ -157,8 +179,6 @@ def _preferred(places: Layout, upright: int, scales: Floats, grow: float) -> Flo
     """Return half sizes (bodies, 3) that leave room for the neighbours and for the springs between rows."""
     count = len(places.centres)
     half = np.tile(np.array([WIDTH, HEIGHT, HEIGHT]) * grow / 2 / scales, (count, 1))
-    if upright == 2:
-        half[:, 1] = 0.6 * half[:, 0]
     if not count:
         return half
     if count > COMPARED:

@@ -17,7 +17,7 @@ from modalview.drawing.model_items import (
     train_items,
 )
 from modalview.drawing.primitives import Box, Drawing, Item, Role
-from modalview.drawing.view import View
+from modalview.drawing.view import View, Viewpoint
 from modalview.model.parts import Model
 
 __all__ = ["SheetGeometry", "TitleLines", "part_at", "sheet_drawing", "sheet_geometry", "title_lines"]
@@ -34,7 +34,13 @@ NEAR_LINK = 9.0  # pixels: how close to a link's line a click may be
 
 
 def sheet_geometry(
-    model: Model, width: float, height: float, *, text_scale: float = 1.0, view: View | None = None
+    model: Model,
+    width: float,
+    height: float,
+    *,
+    text_scale: float = 1.0,
+    view: View | None = None,
+    viewpoint: Viewpoint = Viewpoint.TURNED,
 ) -> SheetGeometry:
     """Lay a model out on a sheet: once per edit, window size, zoom or text size.
 
@@ -45,7 +51,9 @@ def sheet_geometry(
         Pixels.
     text_scale : float
     view : View or None
-        None fits the model; else what ``geometry.view.panned`` or ``zoomed`` gave.
+        None fits the model; else what ``geometry.view.panned`` or ``zoomed`` gave, of the same viewpoint.
+    viewpoint : Viewpoint
+        From where a space model is seen.
     """
     side = min(SIDE * text_scale, (1 - LEAST_WIDE) / 2 * width)
     block = MARGIN + title_size(model.title, (width, height), text_scale)[1]
@@ -53,7 +61,7 @@ def sheet_geometry(
     least = block + min(arrows - SPARE, LEAST_ARROWS * height) if lines_above(model) else block + 4.0
     top = min(block + arrows, max((1 - LEAST_HIGH) * height - BOTTOM, least))
     area = (side, top, max(width - 2 * side, 40.0), max(height - top - BOTTOM, 40.0))
-    return lettered(bare_geometry(model, (width, height), area, view, 1.0, text_scale))
+    return lettered(bare_geometry(model, (width, height), area, view or viewpoint, 1.0, text_scale))
 
 
 def sheet_drawing(

@@ -1,6 +1,7 @@
 """From the drawing's world to pixels: one projection and one scale."""
 
 from dataclasses import dataclass, replace
+from enum import StrEnum
 
 import numpy as np
 
@@ -13,10 +14,25 @@ _TURN = np.radians(28.0)
 _RISE = np.radians(24.0)
 
 
-def projection(motion: Motion) -> Floats:
+class Viewpoint(StrEnum):
+    """From where a space model is seen; other models are drawn in their own plane."""
+
+    TURNED = "turned"
+    FRONT = "front"  # along y: x right, z up
+    SIDE = "side"  # from the end that x points to, which the turned view shows too: y right, z up
+    TOP = "top"  # from above: x right, y up
+
+
+# Numbers of the axes that are seen straight on: to the right, and up.
+STRAIGHT = {Viewpoint.FRONT: (0, 2), Viewpoint.SIDE: (1, 2), Viewpoint.TOP: (0, 1)}
+
+
+def projection(motion: Motion, viewpoint: Viewpoint = Viewpoint.TURNED) -> Floats:
     """Return the (2, 3) matrix from world to the plane of the sheet, x right and y up."""
     if motion is not Motion.SPACE:
         return np.array([[1.0, 0.0, 0.0], [0.0, 1.0, 0.0]])
+    if viewpoint in STRAIGHT:
+        return np.eye(3)[list(STRAIGHT[viewpoint])]
     turn, rise = (np.cos(_TURN), np.sin(_TURN)), (np.cos(_RISE), np.sin(_RISE))
     return np.array([[turn[0], turn[1], 0.0], [-turn[1] * rise[1], turn[0] * rise[1], rise[0]]])
 
@@ -33,6 +49,8 @@ class View:
         Pixels per metre; equal where distances carry meaning.
     left, top : float
         Pixels of the world's origin.
+    viewpoint : Viewpoint
+        TURNED also for models that are no space.
     """
 
     matrix: Floats
@@ -40,6 +58,12 @@ class View:
     scale_y: float
     left: float
     top: float
+    viewpoint: Viewpoint = Viewpoint.TURNED
+
+    @property
+    def straight(self) -> bool:
+        """Whether a space model is seen along one of its axes."""
+        return self.viewpoint is not Viewpoint.TURNED
 
     def to_pixels(self, world: Floats) -> Floats:
         """Return (..., 2) pixels of (..., 3) world points."""
@@ -48,6 +72,12 @@ class View:
     def steps(self, world: Floats) -> Floats:
         """Return (..., 2) pixel steps of (..., 3) world steps."""
         return np.asarray((world @ self.matrix.T) * np.array([self.scale_x, -self.scale_y]))
+
+    @property
+    def towards(self) -> Floats:
+        """Unit step of the world from the sheet towards the eye (3,)."""
+        out = np.cross(self.matrix[0], self.matrix[1])
+        return np.asarray(out / np.linalg.norm(out))
 
     def panned(self, dx: float, dy: float) -> "View":
         """Return the view moved by pixels."""
