@@ -18,7 +18,7 @@ Array = npt.NDArray[np.float64]
 # Shapes are treated this many at a time, so that stretches of all terms need little memory.
 CHUNK = 64
 # With more coordinates than this, one by one: arrays that fit into the cache are faster.
-TALL = 30_000
+TALL = 8_000
 # Entries of the inverse mass root carry an error far below this; the residual is rounding already.
 ROOT_SLACK = 1e-6
 

@@ -2,9 +2,11 @@
 
 from collections.abc import Callable
 from dataclasses import dataclass
+from functools import partial
 
 import numpy as np
 
+from modalview.factor.edited import count_at
 from modalview.factor.inertia import Inertia
 from modalview.factor.relative import USUAL_SHARE, WIDENED, Relative
 from modalview.factor.shifted import ShiftedPencil
@@ -160,7 +162,7 @@ def _outward(shifted: ShiftedPencil, lam: float, side: float) -> Inertia | str:
     least = shifted.least_uncertainty(lam)
     sought = _Sought(lam, side, allowed)
     nudges = NUDGES if shifted.relative is None else 0
-    found = sought.sparse(shifted.factorize, nudges) if least < allowed else None
+    found = sought.sparse(partial(count_at, shifted), nudges) if least < allowed else None
     if found is not None and sought.proven_by(found):
         return found
     if shifted.relative is not None:
@@ -199,7 +201,7 @@ class _Sought:
             found = factorize(_displaced(self.lam, self.side, distance))
             if self.proven_by(found):
                 break
-            beyond = STAND_OFF * found.uncertainty
+            beyond = _stepped(STAND_OFF * found.uncertainty)
             if distance < beyond and beyond + found.uncertainty <= self.allowed:
                 distance = beyond
             elif nudged < (NUDGES if found.uncertainty == np.inf else nudges):
@@ -227,6 +229,11 @@ def _displaced(lam: float, side: float, distance: float) -> float:
     """Lam moved outward by at least one unit in the last place."""
     moved = lam + side * distance
     return float(moved if moved != lam else np.nextafter(lam, side * np.inf))
+
+
+def _stepped(distance: float) -> float:
+    """Round up by at most a fifth, so that after an edit the edge is where it was and counts there serve."""
+    return float(2 ** (np.ceil(4 * np.log2(distance)) / 4)) if 0 < distance < np.inf else distance
 
 
 def _too_stiff(uncertainty: float, lam: float) -> str:

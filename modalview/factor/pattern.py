@@ -1,7 +1,7 @@
 """One fixed pattern for K - sigma M at every shift, and what its factors look like."""
 
 from copy import copy
-from dataclasses import dataclass
+from dataclasses import dataclass, field
 from typing import Literal
 
 import numpy as np
@@ -10,6 +10,7 @@ import scipy.sparse as sp
 from scipy.sparse.linalg import SuperLU, splu
 
 from modalview.factor.dissection import dissection
+from modalview.factor.earlier import EarlierCounts
 
 Array = npt.NDArray[np.float64]
 Indices = npt.NDArray[np.intp]
@@ -81,6 +82,8 @@ class Pattern:
         Entries in each row of L, by position in the factors.
     template : csc_array (n, n)
         A matrix of this pattern, to be copied and filled.
+    earlier : EarlierCounts
+        Counts of models of this pattern that an edit may start from.
     """
 
     stored: Indices
@@ -91,6 +94,7 @@ class Pattern:
     factors: Factors | None
     terms: Indices
     template: sp.csc_array
+    earlier: EarlierCounts = field(default_factory=EarlierCounts)
 
     @property
     def n(self) -> int:
