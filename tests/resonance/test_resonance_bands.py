@@ -79,7 +79,9 @@ def test_label_of_a_fixed_frequency(frequency, label):
     assert band(excitations=[{"id": "line", "frequency": frequency}]).label == label
 
 
-@pytest.mark.parametrize(("order", "label"), [(1, "1×"), (0.5, "0.5×"), (7, "7×"), (1.25, "1.25×"), (2e6, "2e6×")])
+@pytest.mark.parametrize(
+    ("order", "label"), [(1, "1×"), (0.5, "0.5×"), (7, "7×"), (1.25, "1.25×"), (2e6, "2e6×")]
+)
 def test_label_of_an_order(order, label):
     assert band(excitations=[{"id": "o", "order": order}]).label == label
     assert band(excitations=[{"id": "o", "order": order, "name": "vane pass"}]).label == f"{label} vane pass"
