@@ -7,7 +7,9 @@ import numpy as np
 from modalview.drawing.geometry import SheetGeometry
 from modalview.drawing.layout import GROUND
 from modalview.drawing.primitives import Floats
+from modalview.model.parts import Motion
 
+APART = 13.0  # pixels from a link seen end-on to the handles of its ends
 HANDLE = 7.0  # pixels from a handle's middle within which it is hit
 # Handles of a body by compass point: across (-1, 0, 1) and up.
 CORNERS = {
@@ -49,15 +51,27 @@ def handles(geometry: SheetGeometry, chosen: tuple[str, ...]) -> tuple[Handle, .
         if body.id == chosen[0]:
             x1, y1, x2, y2 = geometry.boxes[number].tolist()
             cx, cy, hx, hy = (x1 + x2) / 2, (y1 + y2) / 2, (x2 - x1) / 2, (y2 - y1) / 2
+            fixed = _fixed_ways(geometry)
             return tuple(
-                Handle(body.id, name, cx + across * (hx + 5), cy + up * (hy + 5))
-                for name, (across, up) in CORNERS.items()
+                Handle(body.id, name, cx + ways[0] * (hx + 5), cy + ways[1] * (hy + 5))
+                for name, ways in CORNERS.items()
+                if not any(ways[axis] for axis in fixed)
             )
     for number, link in enumerate(geometry.model.links):
         if link.id == chosen[0]:
-            ends = geometry.link_ends[number].tolist()
+            ends = geometry.link_ends[number]
+            if geometry.links_end_on[number]:  # both are at one place: beside each other
+                ends = ends + np.array([[-APART, 0.0], [APART, 0.0]])
+            ends = ends.tolist()
             return tuple(Handle(link.id, name, *end) for name, end in zip(("from", "to"), ends, strict=True))
     return ()
+
+
+def _fixed_ways(geometry: SheetGeometry) -> tuple[int, ...]:
+    """Return which ways (0 across, 1 up) a body has no size of its own to be drawn: no file has its depth."""
+    if geometry.model.motion is not Motion.SPACE or not geometry.view.straight:
+        return ()
+    return tuple(np.flatnonzero(geometry.view.matrix[:, 1]).tolist())
 
 
 def handle_at(geometry: SheetGeometry, chosen: tuple[str, ...], x: float, y: float) -> Handle | None:

@@ -16,11 +16,19 @@ from modalview.drawing.model_items import (
     part_items,
     train_items,
 )
-from modalview.drawing.primitives import Box, Drawing, Item, Role
+from modalview.drawing.primitives import Box, Drawing, Floats, Item, Role
 from modalview.drawing.view import View, Viewpoint
-from modalview.model.parts import Model
+from modalview.model.parts import Model, Motion
 
-__all__ = ["SheetGeometry", "TitleLines", "part_at", "sheet_drawing", "sheet_geometry", "title_lines"]
+__all__ = [
+    "SheetGeometry",
+    "TitleLines",
+    "part_at",
+    "parts_at",
+    "sheet_drawing",
+    "sheet_geometry",
+    "title_lines",
+]
 
 SIDE, BOTTOM = 110.0, 46.0  # pixels kept free for labels, and for ground
 ARROWS, SPARE = (
@@ -77,6 +85,8 @@ def sheet_drawing(
 
 def part_at(geometry: SheetGeometry, x: float, y: float) -> str | None:
     """Return the id of the body, link or support at a point of the sheet; None where there is none."""
+    if geometry.model.motion is Motion.SPACE:
+        return next(iter(parts_at(geometry, x, y)), None)
     here = np.array([x, y])
     inside = ((geometry.boxes[:, :2] <= here) & (here <= geometry.boxes[:, 2:])).all(axis=1)
     if inside.any():
@@ -84,19 +94,48 @@ def part_at(geometry: SheetGeometry, x: float, y: float) -> str | None:
         return geometry.model.bodies[int(np.argmin(np.where(inside, sizes, np.inf)))].id
     if not len(geometry.link_ends):
         return None
+    share, off = _from_links(geometry, here)
+    return _link_or_support(geometry, int(np.argmin(off)), share, off)
+
+
+def parts_at(geometry: SheetGeometry, x: float, y: float) -> tuple[str, ...]:
+    """Return the ids of all that lies at a point of the sheet of a space model, one behind the other."""
+    here = np.array([x, y])
+    inside = ((geometry.boxes[:, :2] <= here) & (here <= geometry.boxes[:, 2:])).all(axis=1)
+    sizes = np.prod(geometry.boxes[:, 2:] - geometry.boxes[:, :2], axis=1)
+    bodies = sorted(np.flatnonzero(inside).tolist(), key=lambda body: float(sizes[body]))
+    before: list[str | None] = []
+    behind: list[str | None] = []
+    if len(geometry.link_ends):
+        share, off = _from_links(geometry, here)
+        for number in np.argsort(off, kind="stable")[: (off <= 2 * NEAR_LINK).sum()].tolist():
+            group = before if geometry.links_on_top[number] else behind
+            group.append(_link_or_support(geometry, number, share, off))
+            if geometry.links_end_on[number] and group[-1] is not None:
+                link = geometry.model.links[number]
+                behind += [link.from_.support, link.to.support]
+    found = [*before, *(geometry.model.bodies[body].id for body in bodies), *behind]
+    return tuple(dict.fromkeys(part for part in found if part is not None))
+
+
+def _from_links(geometry: SheetGeometry, here: Floats) -> tuple[Floats, Floats]:
+    """Return where along each link a point lies, 0 to 1 between its ends, and how far from it in pixels."""
     start, step = geometry.link_ends[:, 0], geometry.link_ends[:, 1] - geometry.link_ends[:, 0]
     lengths = np.maximum((step**2).sum(axis=1), 1e-12)
     share = ((here - start) * step).sum(axis=1) / lengths
-    off = np.hypot(*(here - start - np.clip(share, 0, 1)[:, None] * step).T)
-    nearest = int(np.argmin(off))
-    if off[nearest] > 2 * NEAR_LINK:
+    return share, np.hypot(*(here - start - np.clip(share, 0, 1)[:, None] * step).T)
+
+
+def _link_or_support(geometry: SheetGeometry, number: int, share: Floats, off: Floats) -> str | None:
+    """Return the link that a point is close to, the support beyond its end, or None."""
+    if off[number] > 2 * NEAR_LINK:
         return None
-    link = geometry.model.links[nearest]
+    link = geometry.model.links[number]
     for side, end in enumerate((link.from_, link.to)):
-        beyond = share[nearest] < 0 if side == 0 else share[nearest] > 1
-        if beyond and geometry.link_bodies[nearest, side] == GROUND and end.support is not None:
+        beyond = share[number] < 0 if side == 0 else share[number] > 1
+        if beyond and geometry.link_bodies[number, side] == GROUND and end.support is not None:
             return end.support
-    return link.id if off[nearest] <= NEAR_LINK else None
+    return link.id if off[number] <= NEAR_LINK else None
 
 
 def _frame(geometry: SheetGeometry, selected: str | None) -> tuple[Item, ...]:

@@ -9,14 +9,19 @@ from modalview.drawing.geometry import SheetGeometry
 from modalview.drawing.layout import GROUND
 from modalview.drawing.primitives import Floats
 from modalview.drawing.view import View
+from modalview.model.parts import Motion
 
 # Pixels within which a pointer is drawn to a point, or to the height or side of one.
 NEAR, LEVEL = 9.0, 6.0
+# In space, pixels from a body within which what is drawn gets its depth.
+BESIDE = 40.0
 # The finest grid whose lines are so many pixels apart; steps are 1, 2 or 5 times a power of ten.
 FINEST = 9.0
 _STEPS = (1.0, 2.0, 5.0)
 _NO_LINES = np.zeros((0, 4))
-_KINDS = ("centre of gravity", "top", "underside", "left side", "right side", *("corner",) * 4)
+_KINDS = ("centre of gravity", "top", "underside", "left side", "right side", *("corner",) * 4, "attachment")
+_BOX_MARKS = 9  # of the kinds above, those of a body's box
+_ATTACHMENT = _BOX_MARKS
 Indices = npt.NDArray[np.int_]
 
 
@@ -34,6 +39,8 @@ class Snapped:
         What it stands on: "centre of gravity of motor", "level with pump", "grid"; "" where it is free.
     lines : array (n, 4)
         Alignments to be shown, pixels.
+    on_point : bool
+        Whether it stands on an end of a link of a space model, whose depth it has.
     """
 
     world: Floats
@@ -41,6 +48,7 @@ class Snapped:
     y: float
     what: str
     lines: Floats
+    on_point: bool = False
 
 
 @dataclass(frozen=True, slots=True)
@@ -95,6 +103,19 @@ def drawn_axes(view: View) -> tuple[int, int]:
     return pairs[int(np.argmax(areas))]
 
 
+def hidden_axis(view: View) -> int:
+    """Return the number of the axis that is not drawn in: its coordinate is kept, the depth of a point."""
+    return 3 - sum(drawn_axes(view))
+
+
+def with_depth(view: View, world: Floats, depth: float) -> Floats:
+    """Return the point at the same pixel with another depth, in metres."""
+    through = np.zeros(3)
+    through[hidden_axis(view)] = depth
+    x, y = view.to_pixels(world[None])[0].tolist()
+    return world_at(view, x, y, through)
+
+
 def snapped(
     geometry: SheetGeometry, x: float, y: float, wish: Wish | None = None, through: Floats | None = None
 ) -> Snapped:
@@ -107,7 +128,8 @@ def snapped(
         Pixels.
     wish : Wish or None
     through : array (3,) or None
-        World point whose depth is kept, in space.
+        World point whose depth is kept, in space. None takes that of the part that it is drawn to or stands
+        beside, else 0.
     """
     wish = wish or Wish()
     level: str | None = None
@@ -115,29 +137,71 @@ def snapped(
         level = "x" if abs(x - wish.start[0]) >= abs(y - wish.start[1]) else "y"
         x, y = (x, wish.start[1]) if level == "x" else (wish.start[0], y)
     if wish.free:
-        return Snapped(world_at(geometry.view, x, y, through), x, y, "", _NO_LINES)
+        beside = through if through is not None else _beside(geometry, x, y, wish)
+        return Snapped(world_at(geometry.view, x, y, beside), x, y, "", _NO_LINES)
     marks = _marks(geometry, wish)
     if len(marks.places) and level is None:
         off = np.hypot(marks.places[:, 0] - x, marks.places[:, 1] - y)
         best = int(np.argmin(off))
         if off[best] <= NEAR:
             there = marks.places[best].tolist()
-            world = world_at(geometry.view, there[0], there[1], through)
-            return Snapped(world, there[0], there[1], marks.name(geometry, best), _NO_LINES)
-    return _aligned(geometry, (x, y), marks, level, through)
+            world = marks.world(geometry, best, through)
+            on_point = bool(marks.kinds[best] == _ATTACHMENT or marks.bodies[best] == GROUND)
+            name = marks.name(geometry, best)
+            return Snapped(world, there[0], there[1], name, _NO_LINES, on_point and _space(geometry))
+    return _aligned(geometry, (x, y), marks, level, (wish, through))
+
+
+def _space(geometry: SheetGeometry) -> bool:
+    return geometry.model.motion is Motion.SPACE
+
+
+def _beside(geometry: SheetGeometry, x: float, y: float, wish: Wish) -> Floats | None:
+    """Return the centre of gravity of the body at or close to a pixel, in space; None where there is none."""
+    stays = np.array([body.id not in wish.leave_out for body in geometry.model.bodies], dtype=bool)
+    if not _space(geometry) or not stays.any():
+        return None
+    off = np.maximum(geometry.boxes[:, :2] - [x, y], [x, y] - geometry.boxes[:, 2:]).clip(0.0)
+    lengths = np.where(stays, np.hypot(off[:, 0], off[:, 1]), np.inf)
+    nearest = int(np.argmin(lengths))
+    return geometry.places.centres[nearest] if lengths[nearest] <= BESIDE else None
 
 
 @dataclass(frozen=True, slots=True, eq=False)
 class _Marks:
-    """Points to be drawn to (n, 2), the kind of each, and its body; GROUND for a foot."""
+    """Points to be drawn to (n, 2), the kind of each, and its body; GROUND for a foot.
+
+    ``ends`` are link and side of those that are an end of a link, else -1.
+    """
 
     places: Floats
     kinds: Indices
     bodies: Indices
+    ends: Indices
+
+    def world(self, geometry: SheetGeometry, number: int, through: Floats | None) -> Floats:
+        """Return the world point of one, at the depth of ``through`` if that is given."""
+        x, y = self.places[number].tolist()
+        link, side = self.ends[number].tolist()
+        if not _space(geometry):
+            return world_at(geometry.view, x, y, through)
+        body = int(self.bodies[number])
+        if link >= 0:
+            own = geometry.places.ends[link, side]
+        elif self.kinds[number] == 0:
+            own = geometry.places.centres[body]
+        else:
+            own = world_at(geometry.view, x, y, geometry.places.centres[body])
+        if through is None:
+            return np.array(own)
+        return with_depth(geometry.view, own, float(through[hidden_axis(geometry.view)]))
 
     def owner(self, geometry: SheetGeometry, number: int) -> str:
         if self.bodies[number] == GROUND:
             return "the ground"
+        if self.kinds[number] == _ATTACHMENT:
+            link = geometry.model.links[int(self.ends[number, 0])]
+            return link.name or link.id
         part = geometry.model.bodies[int(self.bodies[number])]
         return part.name or part.id
 
@@ -157,6 +221,7 @@ def _marks(geometry: SheetGeometry, wish: Wish) -> _Marks:
     places = [of_bodies.reshape(-1, 2)]
     kinds = [np.tile(np.arange(len(spots)), len(numbers))]
     owners = [np.repeat(numbers, len(spots))]
+    ends = [np.full((len(owners[0]), 2), -1)]
     if len(geometry.link_ends):
         rows, sides = np.nonzero(geometry.link_bodies == GROUND)
         others = geometry.link_bodies[rows, 1 - sides]
@@ -165,7 +230,15 @@ def _marks(geometry: SheetGeometry, wish: Wish) -> _Marks:
         places.append(feet)
         kinds.append(np.full(len(feet), 0))
         owners.append(np.full(len(feet), GROUND))
-    return _Marks(np.concatenate(places), np.concatenate(kinds), np.concatenate(owners))
+        ends.append(np.stack([rows, sides], axis=1)[kept])
+    if len(geometry.link_ends) and _space(geometry):
+        rows, sides = np.nonzero(np.append(stays, False)[geometry.link_bodies])
+        places.append(geometry.view.to_pixels(geometry.places.ends[rows, sides]))
+        kinds.append(np.full(len(rows), _ATTACHMENT))
+        owners.append(geometry.link_bodies[rows, sides])
+        ends.append(np.stack([rows, sides], axis=1))
+    parts = (np.concatenate(one) for one in (places, kinds, owners, ends))
+    return _Marks(*parts)
 
 
 def _aligned(
@@ -173,13 +246,15 @@ def _aligned(
     at: tuple[float, float],
     marks: _Marks,
     level: str | None,
-    through: Floats | None,
+    wanted: tuple[Wish, Floats | None],
 ) -> Snapped:
     """Draw to the side or the height of a part, each axis by itself; to the grid where there is none."""
+    wish, through = wanted
     view = geometry.view
     here = list(at)
     starts: list[tuple[float, float]] = []
     words: list[str] = []
+    depths: list[Floats] = []
     kept = [level == "y", level == "x"]  # what runs straight keeps its other coordinate
     for axis in (0, 1):
         if kept[axis] or not len(marks.places):
@@ -189,8 +264,12 @@ def _aligned(
         if off[best] <= LEVEL:
             here[axis] = float(marks.places[best, axis])
             kept[axis] = True
+            depths.append(marks.world(geometry, best, None))
             starts.append((float(marks.places[best, 0]), float(marks.places[best, 1])))
             words.append(f"{'in line' if axis == 0 else 'level'} with {marks.owner(geometry, best)}")
+    if through is None and _space(geometry):
+        beside = _beside(geometry, *at, wish)
+        through = beside if beside is not None else next(iter(depths), None)
     world = world_at(view, here[0], here[1], through)
     for axis, number in enumerate(drawn_axes(view)):
         if not kept[axis]:
