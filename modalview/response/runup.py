@@ -14,9 +14,10 @@ from modalview.eigen.span import ModeSpan
 
 Array = npt.NDArray[np.float64]
 
-# A sweep of S Hz/s through a mode of f Hz and Q = 1/(2 zeta) comes within 5 % of the steady amplitude up to
-# S = 0.9 f^2/Q^2 (54 Hz/min; ISO 7626-2, from memory): that is Q/0.9 cycles inside the half-power band.
-SWEPT_CYCLES_PER_Q = 1 / 0.9
+# With so many cycles per Q = 1/(2 zeta) inside the half-power band the amplitude comes within about 5 % of
+# the steady one: computed for one oscillator swept at a constant rate, 5.1 % at a damping ratio of 0.1, 4.0 %
+# at 0.01 (tests). ISO 7626-2 allows swept tests somewhat more haste: 1.1 (from memory).
+SWEPT_CYCLES_PER_Q = 1.5
 
 
 @dataclass(frozen=True, slots=True)

@@ -1,6 +1,7 @@
 """What is known before any solve: bounds, counts and the proven verdict."""
 
 import math
+from collections.abc import Sequence
 from time import perf_counter
 
 from modalview.advice.assembled import doubts_of
@@ -16,7 +17,7 @@ from modalview.errors import CancelledError
 from modalview.factor.counts import LARGEST_SHARE
 from modalview.resonance.bands import bands
 from modalview.resonance.exactly import judge_exactly
-from modalview.resonance.results import Check, Verdict
+from modalview.resonance.results import Band, Check, Verdict
 from modalview.resonance.unchecked import not_checked
 from modalview.resonance.verdict import BY_COUNTS, Exactness, Question, answer, worst
 from modalview.study.intervals import scale_intervals
@@ -73,19 +74,30 @@ def look(request: Request, previous: Outlook | None = None) -> Outlook:
 
 def _checks(request: Request, assembly: Assembly) -> tuple[tuple[Check, ...], tuple[str, ...]]:
     """Return the checks, and what a reader must know of their proof."""
-    exactness = Exactness(len(assembly.exact_values), len(assembly.matter))
     if request.exact:
+        exactness = Exactness(len(assembly.exact_values), len(assembly.matter))
         return _exact_checks(request, assembly, exactness)
+    return judge_bands(request, assembly, bands(request.model)), ()
+
+
+def judge_bands(request: Request, assembly: Assembly, wanted: Sequence[Band]) -> tuple[Check, ...]:
+    """Return the verdict on each band, by counts in floating point.
+
+    Raises
+    ------
+    CancelledError
+    """
+    exactness = Exactness(len(assembly.exact_values), len(assembly.matter))
     modes = assembly.pencil().modes
     rough, sharp = _counters(request, assembly)
     found = []
-    for band in bands(request.model):
+    for band in wanted:
         _stop_if(request)
         check = answer(Question(band, band.nominal, band.tolerance, rough, modes, BY_COUNTS), exactness)
         if rough is not sharp and check.verdict is not Verdict.CLEAR and (check.inside or 0) < MANY:
             check = answer(Question(band, band.nominal, band.tolerance, sharp, modes, BY_COUNTS), exactness)
         found.append(check)
-    return tuple(found), ()
+    return tuple(found)
 
 
 def _counters(request: Request, assembly: Assembly) -> tuple[Counters, Counters]:
