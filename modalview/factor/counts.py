@@ -201,9 +201,10 @@ class _Sought:
             found = factorize(_displaced(self.lam, self.side, distance))
             if self.proven_by(found):
                 break
-            beyond = _stepped(STAND_OFF * found.uncertainty)
-            if distance < beyond and beyond + found.uncertainty <= self.allowed:
-                distance = beyond
+            least = STAND_OFF * found.uncertainty
+            room = self.allowed - found.uncertainty
+            if distance < least < room:
+                distance = _stepped(least) if _stepped(least) < room else least
             elif nudged < (NUDGES if found.uncertainty == np.inf else nudges):
                 nudged += 1
                 distance = nudged * unit

@@ -6,6 +6,7 @@ import scipy.sparse as sp
 from test_factor_counts import assert_decided, chain
 
 from modalview.assembly.pencil import pencil_of_terms
+from modalview.factor import relative as relative_module
 from modalview.factor.counts import count_at_most
 from modalview.factor.pattern import Pattern
 from modalview.factor.relative import METHOD
@@ -114,3 +115,11 @@ def test_products_that_cancel_keep_their_last_digit():
     left = sp.csr_array(np.array([[1.0 + 2.0**-52, -1.0, 0.0]]))
     right = sp.csr_array(np.array([[1.0 - 2.0**-52], [1.0], [3.0]]))
     assert product(left, right).toarray().tolist() == [[-(2.0**-104)]]
+
+
+def test_an_edge_moves_as_far_as_it_may_where_rounding_is_wide(monkeypatch):
+    # a fifth share for rounding: 2.1 times it just fits beside the edge, moved out by a quarter more
+    monkeypatch.setattr(relative_module, "SHARES", (2e-7,))
+    pencil = softly_held(1e12)
+    for share in (0.9, 1 - 1e-5, 1 + 1e-5, 1.1):
+        assert_decided(pencil, share * soft_eigenvalues(pencil, 1)[0])
