@@ -9,7 +9,7 @@ from modalview.drawing.captions import in_two, shortened
 from modalview.drawing.labels import Board, Line, Spot, extent
 from modalview.drawing.primitives import Anchor, Box, Circles, Drawing, Item, Lines, Role, Size, Text
 from modalview.drawing.scalecontent import ScaleBand, ScaleContent, ScaleCount, ScaleMode
-from modalview.drawing.symbols import arrow, hatched
+from modalview.drawing.symbols import arrow, dashed, hatched
 from modalview.drawing.textsize import BOLD, text_width
 from modalview.resonance.results import Verdict
 from modalview.units.show import significant
@@ -94,6 +94,7 @@ def scale_drawing(
     pale = _discs(frame, content) if discs else ()
     items = _axes(frame) + _bands(frame, content.bands) + pale
     items += _bounds(frame, content) + _counts(frame, content.counts) + _modes(frame, content.modes)
+    items += _foretold(frame, content.foretold)
     items += _titles(frame, content, discs=discs)
     return Scale(Drawing(items, (0.0, 0.0, width, height), text_scale), axis)
 
@@ -101,7 +102,7 @@ def scale_drawing(
 def axis_range(content: ScaleContent) -> tuple[float, float]:
     """Return the lowest and the highest frequency of the axis in Hz, fitted to the model."""
     known = [hz for pair in (content.lowest, content.highest) if pair is not None for hz in pair]
-    known += [hz for mode in content.modes for hz in (mode.low, mode.high)]
+    known += [hz for mode in (*content.modes, *content.foretold) for hz in (mode.low, mode.high)]
     known = [hz for hz in known if 0 < hz < np.inf]
     bands = [hz for band in content.bands for hz in (band.low, band.high)]
     low, high = min(known or bands or [1.0]), max(known or bands or [100.0])
@@ -362,6 +363,24 @@ def _modes(frame: _Frame, modes: tuple[ScaleMode, ...]) -> tuple[Item, ...]:
     return tuple(items) + _numbers(frame, shown, right + 5)
 
 
+def _foretold(frame: _Frame, modes: tuple[ScaleMode, ...]) -> tuple[Item, ...]:
+    """Draw modes that are foretold, not found: pale and dashed, their numbers beside."""
+    axis = frame.axis
+    shown = [mode for mode in modes if axis.low_hz <= mode.hz <= axis.high_hz]
+    if not shown:
+        return ()
+    room = 8.0 + text_width(max((str(mode.number) for mode in shown), key=len), Size.SMALL)
+    left, right = frame.x(_MODE[0]), min(frame.x(_MODE[1]), frame.right - room * frame.text_scale)
+    ticks = axis.ys_of(np.array([mode.hz for mode in shown]))
+    across = np.stack([0 * ticks + left, ticks, 0 * ticks + right, ticks], axis=1)
+    places = spread(ticks.tolist(), 14.5 * frame.text_scale, axis.top, axis.bottom)
+    numbers = (
+        Text(right + 5, y, str(mode.number), Role.MUTED, Size.SMALL, Anchor.LEFT)
+        for mode, y in zip(shown, places, strict=True)
+    )
+    return Lines(dashed(across, 4.0, 3.0), Role.MUTED, 1.6), *numbers
+
+
 def _numbers(frame: _Frame, shown: list[ScaleMode], x: float) -> tuple[Item, ...]:
     """Write the modes' numbers beside their ticks; of too many, every second, third, ..."""
     axis, apart = frame.axis, 14.5 * frame.text_scale
@@ -382,9 +401,11 @@ def _titles(frame: _Frame, content: ScaleContent, *, discs: bool) -> tuple[Item,
     """Write what the columns show, under them; rigid-body modes are at zero, below every axis."""
     size, text_scale = Size.SMALL, frame.text_scale
     columns = [(frame.x(_COUNT), ("modes", "inside"))]
-    if content.modes:
-        columns.append((frame.x(sum(_MODE) / 2), ("found", "modes")))
-    apart = 8.0 + text_width("inside", size, text_scale=text_scale)
+    if content.modes or content.foretold:
+        word = "found" if content.modes else "foretold"
+        columns.append((frame.x(sum(_MODE) / 2), (word, "modes")))
+    widths = [max(text_width(line, size, text_scale=text_scale) for line in lines) for _, lines in columns]
+    apart = 8.0 + max(widths[0], sum(widths) / len(widths))
     places = spread([x for x, _ in columns], apart, frame.left, frame.right + apart / 2)
     titles = [(x, Anchor.MIDDLE, lines) for x, (_, lines) in zip(places, columns, strict=True)]
     if discs:

@@ -1,5 +1,6 @@
 """What the frequency scale shows, taken from the study's results; all Hz."""
 
+from collections.abc import Mapping
 from dataclasses import dataclass, field
 
 import numpy as np
@@ -7,7 +8,7 @@ import numpy as np
 from modalview.bounds.discs import Discs
 from modalview.drawing.primitives import Floats
 from modalview.resonance.results import Check, Verdict
-from modalview.study.results import Outlook, Solution
+from modalview.study.results import Known, Solution
 
 RAD_PER_HZ = 2 * np.pi
 
@@ -75,6 +76,8 @@ class ScaleContent:
         Low, centre, high of the Gershgorin discs of S.
     modes : tuple of ScaleMode
         Elastic ones.
+    foretold : tuple of ScaleMode
+        What elastic modes found before an edit become by it; without ranges.
     rigid_body_modes : int
         Modes at 0, told below the axis.
     """
@@ -85,11 +88,23 @@ class ScaleContent:
     highest: tuple[float, float] | None = None
     discs: Floats = field(default_factory=_none)
     modes: tuple[ScaleMode, ...] = ()
+    foretold: tuple[ScaleMode, ...] = ()
     rigid_body_modes: int = 0
 
 
-def scale_content(outlook: Outlook, solution: Solution | None = None) -> ScaleContent:
-    """Take from an outlook, and the solution of the same model if there is one, what the scale shows."""
+def scale_content(
+    outlook: Known, solution: Solution | None = None, *, foretold: Mapping[int, float] | None = None
+) -> ScaleContent:
+    """Take what the scale shows from what is known of a model.
+
+    Parameters
+    ----------
+    outlook : Known
+    solution : Solution or None
+        Of the same model, if there is one.
+    foretold : mapping of float or None
+        Frequencies in Hz by the numbers of modes found before the last edit.
+    """
     machines = outlook.request.model.machines
     names = {one.id: one.name or one.id for one in machines} if len(machines) > 1 else {}
     bands = tuple(_band(check, names.get(check.band.machine, "")) for check in outlook.checks)
@@ -105,6 +120,7 @@ def scale_content(outlook: Outlook, solution: Solution | None = None) -> ScaleCo
         highest=bounds.highest_hz,
         discs=_discs_hz(bounds.symmetric),
         modes=_modes(bands, solution),
+        foretold=tuple(ScaleMode(n, hz, hz, hz) for n, hz in (foretold or {}).items() if hz > 0),
         rigid_body_modes=bounds.rigid_body_modes or 0,
     )
 

@@ -14,6 +14,7 @@ from modalview.ui.later import Later
 from modalview.ui.modelist import (
     ModeList,
     damped_facts,
+    foretold_text,
     frequency_text,
     is_damped,
     percent,
@@ -45,6 +46,7 @@ class _Now:
     focus: bool
     current: bool
     band: str | None
+    foretold: float | None
     size: tuple[int, int]
 
 
@@ -102,11 +104,13 @@ class ModeCard(QStyledItemDelegate):
     ) -> None:
         """Paint one card: what stands still from a kept picture, the small moving picture anew."""
         mode = index.data(ModeList.ModeRole)
+        foretold = index.data(ModeList.ForetoldRole)
         now = _Now(
             chosen=bool(option.state & QStyle.StateFlag.State_Selected),
             focus=bool(option.state & QStyle.StateFlag.State_HasFocus),
             current=index.data(ModeList.CurrentRole),
-            band=index.data(ModeList.BandRole),
+            band=None if foretold is not None else index.data(ModeList.BandRole),
+            foretold=foretold,
             size=(option.rect.width(), option.rect.height()),
         )
         kept = self._still.get((mode.number, now))
@@ -162,12 +166,15 @@ class ModeCard(QStyledItemDelegate):
         if now.band is not None:
             paint_sign(painter, QRectF(head.left(), head.top() + 1, line - 2, line - 2), IN_BAND, self._theme)
             left = head.adjusted(line + 4, 0, 0, 0)
-        text = f"{mode.number}  {frequency_text(mode)}"
+        shown = frequency_text(mode) if now.foretold is None else foretold_text(now.foretold)
+        text = f"{mode.number}  {shown}"
         self._write(painter, left, text, self._theme.in_band if now.band else self._theme.ink, font=bold)
         room = left.adjusted(metrics.horizontalAdvance(text) + 8, 0, 0, 0)
         small = QFont(painter.font())
         small.setPointSizeF(_SMALL * small.pointSizeF())
         words = range_text(mode) if now.current else "out of date"
+        if now.foretold is not None:
+            words = f"was {frequency_text(mode)}"
         self._write(painter, room, words, self._theme.quiet, small, _RIGHT)
         lines = 1 if painter.fontMetrics().horizontalAdvance(mode.name) <= inner.width() else 2
         name = QRectF(inner.left(), inner.top() + line + 1, inner.width(), lines * line)

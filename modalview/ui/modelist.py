@@ -1,5 +1,6 @@
 """The found modes as a list: what each says, in the order of their numbers."""
 
+from collections.abc import Mapping
 from typing import Any
 
 from PySide6.QtCore import QAbstractListModel, QModelIndex, QObject, QPersistentModelIndex, Qt
@@ -47,6 +48,15 @@ def range_text(mode: Any) -> str:
     if low == high:
         return "no tolerance"
     return f"{significant(low, LIST_DIGITS)} to {significant(high, LIST_DIGITS)}"
+
+
+def foretold_text(hz: float) -> str:
+    """Return the frequency that a mode found before an edit has by now, as far as it is foretold.
+
+    >>> foretold_text(68.0612)
+    'foretold 68.06 Hz'
+    """
+    return f"foretold {significant(hz, LIST_DIGITS)} Hz"
 
 
 def is_damped(mode: Any) -> bool:
@@ -101,8 +111,8 @@ def percent(fraction: float) -> str:
     return f"{100 * fraction:.0f} %"
 
 
-def details(mode: Any) -> str:
-    """Return all that is known of a mode, for the tool tip."""
+def details(mode: Any, foretold: float | None = None) -> str:
+    """Return all that is known of a mode, for the tool tip; ``foretold`` is in Hz, after an edit."""
     if is_damped(mode):
         head = f"Root {mode.number}: {mode.name}"
         facts = [f"{name}: {figure}" for name, figure in damped_facts(mode)]
@@ -110,6 +120,11 @@ def details(mode: Any) -> str:
             [head, f"{frequency_text(mode)}, {ratio_text(mode)}", *facts, f"root {mode.root!r} 1/s"]
         )
     lines = [f"Mode {mode.number}: {mode.name}"]
+    if foretold is not None:
+        lines += [
+            f"after the edit {foretold_text(foretold)}, from the modes before it; without range and error",
+            "Find modes (Ctrl+Enter) finds it; all below is of the model before the edit",
+        ]
     if mode.kind == "elastic":
         low, high = mode.range_hz
         lines += [
@@ -123,13 +138,15 @@ def details(mode: Any) -> str:
     return "\n".join(lines)
 
 
-def spoken(mode: Any, *, current: bool) -> str:
+def spoken(mode: Any, *, current: bool, foretold: float | None = None) -> str:
     """Return a mode in one line, for those who hear the window."""
     if is_damped(mode):
         facts = ", ".join(f"{name} {figure}" for name, figure in damped_facts(mode))
         return f"Root {mode.number}: {frequency_text(mode)}, {ratio_text(mode)}, {mode.name}. {facts}"
     shares = ", ".join(f"{one.label} {percent(one.fraction)}" for one in mode.strain[:3])
     old = "" if current else " (of an older model)"
+    if foretold is not None:
+        old = f" (of an older model, now {foretold_text(foretold)})"
     return f"Mode {mode.number}{old}: {frequency_text(mode)}, {range_text(mode)}, {mode.name}. {shares}"
 
 
@@ -139,25 +156,27 @@ class ModeList(QAbstractListModel):
     ModeRole = Qt.ItemDataRole.UserRole
     BandRole = Qt.ItemDataRole.UserRole + 1
     CurrentRole = Qt.ItemDataRole.UserRole + 2
+    ForetoldRole = Qt.ItemDataRole.UserRole + 3
 
     def __init__(self, parent: QObject | None = None) -> None:
         super().__init__(parent)
         self._modes: tuple[Any, ...] = ()
         self._in_band: dict[int, str] = {}
         self._current = True
+        self._foretold: Mapping[int, float] = {}
 
     def show_solution(self, solution: Any, *, current: bool) -> None:
         """Show the modes of a study.Solution; None shows none."""
         self.beginResetModel()
         self._modes = () if solution is None else solution.modes
         self._in_band = {} if solution is None else _modes_in_band(solution)
-        self._current = current
+        self._current, self._foretold = current, {}
         self.endResetModel()
 
-    def set_current(self, current: bool) -> None:  # noqa: FBT001  (one word, one meaning)
-        """Mark the modes as those of the model on the sheet, or of an older one."""
-        if current != self._current and self._modes:
-            self._current = current
+    def mark_old(self, foretold: Mapping[int, float]) -> None:
+        """Mark the modes as those of an older model; ``foretold`` is what some become by the edit, in Hz."""
+        if (self._current or foretold != self._foretold) and self._modes:
+            self._current, self._foretold = False, foretold
             self.dataChanged.emit(self.index(0), self.index(len(self._modes) - 1))
 
     def mode(self, row: int) -> Any:
@@ -183,9 +202,12 @@ class ModeList(QAbstractListModel):
             self.ModeRole: lambda: mode,
             self.BandRole: lambda: self._in_band.get(mode.number),
             self.CurrentRole: lambda: self._current,
+            self.ForetoldRole: lambda: self._foretold.get(mode.number),
             Qt.ItemDataRole.DisplayRole: lambda: f"{mode.number} {frequency_text(mode)}",
-            Qt.ItemDataRole.ToolTipRole: lambda: details(mode),
-            Qt.ItemDataRole.AccessibleTextRole: lambda: spoken(mode, current=self._current),
+            Qt.ItemDataRole.ToolTipRole: lambda: details(mode, self._foretold.get(mode.number)),
+            Qt.ItemDataRole.AccessibleTextRole: lambda: spoken(
+                mode, current=self._current, foretold=self._foretold.get(mode.number)
+            ),
         }
         answer = answers.get(role)
         return answer() if answer else None

@@ -153,7 +153,7 @@ class Modes(QWidget):
         if analysis.solution_current:
             self._show_found(solution)
         else:
-            self.row.modes.set_current(False)
+            self.row.modes.mark_old(analysis.foretold)
 
     def _show_found(self, solution: Any) -> None:
         self.row.show_found(solution)
@@ -186,7 +186,7 @@ class DampedModes(QWidget):
         elif analysis.damped_current:
             self.row.show_found(analysis.damped)
         else:
-            self.row.modes.set_current(False)
+            self.row.modes.mark_old({})
 
 
 def _model_of(solution: Any) -> Model:
@@ -209,6 +209,8 @@ def evidence(analysis: Analysis) -> str:
     if analysis.solution is None:
         return ""
     if not analysis.solution_current:
+        if analysis.foretold:
+            return "Out of date: modes of the model before the last edit, their frequencies foretold"
         return "Out of date: these modes are of the model before the last edit"
     return " · ".join(analysis.solution.evidence[:2])
 

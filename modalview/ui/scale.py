@@ -1,5 +1,6 @@
 """The frequency scale: bands, counts, bounds and found modes on one axis, in hertz and rpm."""
 
+from collections.abc import Mapping
 from typing import Any
 
 from PySide6.QtCore import QEvent, QSize, Signal
@@ -27,6 +28,7 @@ class ScaleCanvas(QWidget):
         super().__init__(parent)
         self._outlook: Any = None
         self._solution: Any = None
+        self._foretold: Mapping[int, float] | None = None
         self._scale: Any = None
         self._cache: QPixmap | None = None
         self._discs = True
@@ -36,9 +38,9 @@ class ScaleCanvas(QWidget):
         self.setSizePolicy(QSizePolicy.Policy.Expanding, QSizePolicy.Policy.Expanding)
         self.setAccessibleName("Frequency scale")
 
-    def show_results(self, outlook: Any, solution: Any) -> None:
-        """Show what is known (study.Outlook) and the modes of the same model, if found."""
-        self._outlook, self._solution = outlook, solution
+    def show_results(self, outlook: Any, solution: Any, foretold: Mapping[int, float] | None = None) -> None:
+        """Show what is known (study.results.Known) and the modes of the same model, found or foretold."""
+        self._outlook, self._solution, self._foretold = outlook, solution, foretold
         self.setAccessibleDescription(_in_words(outlook))
         self._forget()
 
@@ -59,7 +61,7 @@ class ScaleCanvas(QWidget):
     def _build(self) -> None:
         from modalview.drawing import scale, scalecontent  # noqa: PLC0415  (numpy comes after the first paint)
 
-        content = scalecontent.scale_content(self._outlook, solution=self._solution)
+        content = scalecontent.scale_content(self._outlook, solution=self._solution, foretold=self._foretold)
         self._scale = scale.scale_drawing(
             content, self.width(), self.height(), text_scale=self._text_scale, discs=self._discs
         )

@@ -220,7 +220,7 @@ class Window(Frame):
         """Show bounds, counts and verdict."""
         solution = self.analysis.solution if self.analysis.solution_current else None
         outlook = self.analysis.outlook
-        self.scale.canvas.show_results(outlook, solution)
+        self.scale.canvas.show_results(outlook, solution, self.analysis.foretold)
         if outlook is not None:
             self._show_title(str(outlook.verdict or "nothing to check"), outlook.coordinates)
         self.banner.show_analysis(self.analysis)

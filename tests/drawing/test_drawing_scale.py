@@ -214,3 +214,18 @@ def test_content_of_a_studied_model_fits_the_scale(demo_model: Model):
     assert len(content.bands) == len(solution.checks)
     assert len(content.modes) == sum(mode.kind == "elastic" for mode in solution.modes)
     assert_apart(scale_drawing(content, 320, 760).drawing.items, (320, 760))
+
+
+def test_foretold_modes_are_dashed_pale_and_named_so(demo_model: Model):
+    solution = solve(Request(demo_model))
+    number, hz = next((one.number, one.frequency_hz) for one in solution.modes if one.kind == "elastic")
+    content = scale_content(solution.outlook, foretold={0: 0.0, number: hz})
+    assert content.modes == ()
+    assert [mode.number for mode in content.foretold] == [number]  # rigid-body modes are left out
+    bare = scale_drawing(scale_content(solution.outlook), 320, 760).drawing.items
+    items = scale_drawing(content, 320, 760).drawing.items
+    more = [one for one in items if isinstance(one, Lines) and one.role is Role.MUTED]
+    less = [one for one in bare if isinstance(one, Lines) and one.role is Role.MUTED]
+    assert len(more) == len(less) + 1
+    assert "foretold" in [text.text for text in texts(items)]
+    assert_apart(items, (320, 760))

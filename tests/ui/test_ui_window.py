@@ -16,6 +16,7 @@ from PySide6.QtWidgets import (
     QWidget,
 )
 
+from modalview.drawing.primitives import Text
 from modalview.store import read_model
 from modalview.ui import settings as names
 from modalview.ui.dialogs import TextDialog
@@ -288,3 +289,34 @@ def test_every_control_that_takes_the_keyboard_says_what_it_is(pump):
         and not (widget.accessibleName() or getattr(widget, "text", str)())
     ]
     assert silent == []
+
+
+def test_frequencies_after_an_edit_are_foretold_on_cards_and_scale_until_found(pump, qtbot):
+    pump.on_automatic(False)
+    pump.document.type_value(BASE_SUPPORT, "340 kN/mm")
+    qtbot.waitUntil(lambda: bool(pump.analysis.foretold))
+    row = pump.modes.row
+    first = row.modes.index(0)
+    assert first.data(row.modes.CurrentRole) is False
+    assert first.data(row.modes.ForetoldRole) == pytest.approx(68.06, abs=0.01)
+    assert "foretold 68.06 Hz" in first.data(Qt.ItemDataRole.ToolTipRole)
+    assert "foretold 68.06 Hz" in first.data(Qt.ItemDataRole.AccessibleTextRole)
+    assert pump.proof.text().startswith("Out of date")
+    pump.scale.canvas._build()
+    words = [item.text for item in pump.scale.canvas._scale.drawing.items if isinstance(item, Text)]
+    assert "foretold" in words
+    pump.on_find()
+    qtbot.waitUntil(lambda: pump.analysis.solution_current, timeout=5000)
+    assert row.modes.index(0).data(row.modes.ForetoldRole) is None
+    pump.scale.canvas._build()
+    words = [item.text for item in pump.scale.canvas._scale.drawing.items if isinstance(item, Text)]
+    assert "foretold" not in words
+
+
+def test_the_card_of_a_foretold_mode_differs_from_one_merely_out_of_date(pump, qtbot):
+    pump.on_automatic(False)
+    pump.document.type_value(BASE_SUPPORT, "340 kN/mm")
+    qtbot.waitUntil(lambda: bool(pump.analysis.foretold))
+    foretold = pump.modes.row.grab().toImage()
+    pump.modes.row.modes.mark_old({})
+    assert pump.modes.row.grab().toImage() != foretold
