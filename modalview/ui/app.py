@@ -16,7 +16,7 @@ from modalview.ui.windows import Windows, keep_what_is_open, new_session
 
 # A call into Qt gives the interpreter lock away, and to get it back waits for so long while another thread
 # computes. With Python's own 5 ms every painting of 50 calls took a quarter of a second during a study.
-SWITCH_S = 0.0003
+SWITCH_S = 0.00005
 
 HEARTBEAT_MS = 250
 

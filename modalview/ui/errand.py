@@ -1,12 +1,12 @@
 """One piece of work in a thread of its own that ends with a result or an error, and can be called off."""
 
-import gc
-from collections.abc import Callable, Iterator
-from contextlib import contextmanager
+from collections.abc import Callable
 from threading import Event
 from typing import Any
 
 from PySide6.QtCore import QObject, QThreadPool, Signal, Slot
+
+from modalview.ui.garbage import few_collections
 
 Work = Callable[[Callable[[], bool]], Any]  # is told how to ask whether it was called off
 Then = Callable[[Any, Exception | None], None]  # is given the result, or what was raised
@@ -70,25 +70,3 @@ class Errand(QObject):
         self._stop = self._then = None
         self.busy_changed.emit("")
         then(result, error)
-
-
-# Containers made in one go that are worth to be left out of all later searches for garbage.
-MANY_OBJECTS = 20_000
-
-
-@contextmanager
-def few_collections() -> Iterator[None]:
-    """Search for no garbage meanwhile, and never again in what was made, if that is much.
-
-    A search through all objects holds the interpreter lock: 3 ms for a model of 333 bodies, a third of a
-    second for one of 100,000, again and again while it is read. A model has no cycles: it goes without.
-    """
-    before = gc.get_count()[0]
-    gc.disable()
-    try:
-        yield
-    finally:
-        many = gc.get_count()[0] - before > MANY_OBJECTS
-        gc.enable()
-        if many:
-            gc.freeze()

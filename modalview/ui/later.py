@@ -3,7 +3,9 @@
 from collections.abc import Callable, Hashable
 from typing import Any
 
-from PySide6.QtCore import QObject, QThreadPool, Signal, Slot
+from PySide6.QtCore import QObject, QThreadPool, QTimer, Signal, Slot
+
+from modalview.ui.garbage import few_collections
 
 
 class Later(QObject):
@@ -25,9 +27,12 @@ class Later(QObject):
 
         def run() -> None:
             if self._wanted.get(key) is ticket:
-                self._finished.emit(key, ticket, work())
+                with few_collections():
+                    result = work()
+                self._finished.emit(key, ticket, result)
 
-        self._pool.start(run)
+        # After what the window does just now: a thread that computes makes each of its calls into Qt wait.
+        QTimer.singleShot(0, self, lambda: self._pool.start(run))
 
     def waits_for(self, key: Hashable) -> bool:
         """Return whether a piece of work is under way."""

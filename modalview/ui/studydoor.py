@@ -46,6 +46,11 @@ def load_study() -> Study:
     return Study(Request, look, solve, foretell, damped, plane_content)
 
 
+def load_drawing() -> None:
+    """Import what draws, so that the first sheet has not to wait for it."""
+    from modalview.drawing import modepicture, motion, paint, scale, sheet  # noqa: F401, PLC0415
+
+
 def _smallest() -> Model:
     def point(text: str) -> tuple[Entry, Entry]:
         return Entry.typed("0 m", LENGTH), Entry.typed(text, LENGTH)

@@ -14,7 +14,7 @@ from modalview.errors import CancelledError, KeepclearError
 from modalview.model.parts import Model
 from modalview.ui.apart import Apart, is_large
 from modalview.ui.studies import SMALL_MODEL, Find, Step, Studies
-from modalview.ui.studydoor import Study, load_study
+from modalview.ui.studydoor import Study, load_drawing, load_study
 
 __all__ = ["SMALL_MODEL", "Answer", "Find", "Order", "Step", "Worker"]
 
@@ -52,6 +52,7 @@ class _Desk(QObject):
     @Slot()
     def on_started(self) -> None:
         """Import while nobody waits."""
+        load_drawing()
         self._studies = Studies(self._load())
 
     def close(self) -> None:

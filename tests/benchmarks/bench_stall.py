@@ -88,6 +88,10 @@ class Witness(threading.Thread):
             if now > LONG_MS / 3:
                 stacks.append(_stacks())
 
+    def forget(self) -> None:
+        """Begin anew."""
+        self.seen = 0.0, []
+
     def tell(self, phase: str) -> None:
         """Print what was seen since the last time."""
         gap, stacks = self.seen
@@ -136,6 +140,12 @@ class Bench:
         if self.witness is not None:
             self.witness.tell(name)
 
+    def begin(self) -> None:
+        """Leave behind what making the model took."""
+        self.watch.longest(lambda: True, 0.2)
+        if self.witness is not None:
+            self.witness.forget()
+
     def open(self, path: Path) -> None:
         """Open a file and let it be checked."""
         window, analysis = self.window, self.window.analysis
@@ -174,7 +184,7 @@ def measure(bodies: int, *, why: bool) -> None:
     bench = Bench(why=why)
     path = bench.folder / "large.keepclear"
     save_model(plane_model(bodies, round(2.5 * bodies)), path, known=None)
-    bench.watch.longest(lambda: True, 0.2)
+    bench.begin()
     bench.open(path)
     bench.solve_and_edit()
     bench.close()
@@ -188,7 +198,7 @@ def measure_large(family: str, *, why: bool) -> None:
         path.write_text(chain_text(LARGE[family]), encoding="utf-8")
     else:
         save_model(plane_model(LARGE[family], round(2.1 * LARGE[family])), path, known=None)
-    bench.watch.longest(lambda: True, 0.2)
+    bench.begin()
     bench.open(path)
     bench.close()
 

@@ -10,7 +10,7 @@ import pytest
 from PySide6.QtGui import QColor, QFontDatabase, QFontMetricsF, QImage, QPainter
 
 from modalview import drawing
-from modalview.drawing.paint import LineBuffer, font_of, paint
+from modalview.drawing.paint import LINES_AT_ONCE, LineBuffer, font_of, paint
 from modalview.drawing.palette import DARK, LIGHT
 from modalview.drawing.picture import save_picture
 from modalview.drawing.primitives import Box, Circles, Drawing, Lines, Polygons, Role, Size, Text
@@ -71,6 +71,18 @@ def test_a_line_buffer_serves_many_lines_and_then_few():
     few = buffer.filled(many[:2] + 0.5)
     assert len(few) == 2
     assert few[1].p1().toTuple() == (4.5, 5.5)
+
+
+def test_more_lines_than_one_call_takes_are_all_painted():
+    rows = np.arange(2 * LINES_AT_ONCE + 1) % 30 + 2.0
+    across = np.stack([0 * rows + 2, rows, 0 * rows + 30, rows], axis=1)
+    assert painted(one(Lines(across))) == painted(
+        one(Lines(across[:LINES_AT_ONCE]), Lines(across[LINES_AT_ONCE:]))
+    )
+    last = across.copy()
+    last[:-1] = [2, 2, 30, 2]
+    last[-1] = [2, 20, 30, 20]
+    assert painted(one(Lines(last))) != painted(one(Lines(last[:-1])))
 
 
 def test_demo_sheets_paint_in_both_palettes(demo_model: Model):

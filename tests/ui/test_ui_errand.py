@@ -7,7 +7,7 @@ import pytest
 from conftest import FAN, PUMP, settle
 
 from modalview.store import read_model
-from modalview.ui import errand
+from modalview.ui import garbage
 from modalview.ui.errand import Errand
 
 
@@ -69,12 +69,12 @@ def test_closing_calls_off_and_waits(some):
 
 
 def test_many_objects_are_left_out_of_later_searches_for_garbage(monkeypatch):
-    monkeypatch.setattr(errand, "MANY_OBJECTS", 50)
+    monkeypatch.setattr(garbage, "MANY_OBJECTS", 50)
     frozen = gc.get_freeze_count()
-    with errand.few_collections():
+    with garbage.few_collections():
         assert not gc.isenabled()
     assert gc.get_freeze_count() == frozen
-    with errand.few_collections():
+    with garbage.few_collections():
         kept = [[] for _ in range(1000)]
     assert gc.isenabled()
     assert gc.get_freeze_count() >= frozen + len(kept)
