@@ -68,6 +68,7 @@ def add_excitation(  # noqa: PLR0913  (the fields of one form)
     rate: str,
     *,
     at: End | None = None,
+    of: str | None = None,
     direction: Direction | None = None,
     magnitude: str = "",
     name: str = "",
@@ -80,6 +81,8 @@ def add_excitation(  # noqa: PLR0913  (the fields of one form)
         An order of the machine's speed, "1x" or "0,5", or a fixed frequency, "100 Hz".
     at : End or None
         Where it acts.
+    of : str or None
+        Body whose speed the order is of; None for the machine's. Not heeded for a fixed frequency.
     direction : str, tuple or None
         As `parts.Direction`, "rotating" too.
     magnitude : str
@@ -109,6 +112,7 @@ def add_excitation(  # noqa: PLR0913  (the fields of one form)
         name=name.strip() or None,
         order=rhythm.order if rhythm else 1.0,
         frequency=rhythm.frequency if rhythm else None,
+        of=of if rhythm and rhythm.order is not None else None,
         at=at,
         direction=typed_direction(direction),
         magnitude=found.read("magnitude", lambda text: typed_magnitude(text, model.motion), magnitude),

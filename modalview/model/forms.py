@@ -250,7 +250,7 @@ _MOMENTS = ("Ixx", "Iyy", "Izz")
 
 def _specs(model: Model, part: Body | Support | Link | Machine) -> Iterator[_Spec]:
     if isinstance(part, Body):
-        yield from _body(model)
+        yield from _body(model, part)
     elif isinstance(part, Support):
         yield _NAME
         yield from _point(model, ("position",), "position", more=False)
@@ -260,17 +260,19 @@ def _specs(model: Model, part: Body | Support | Link | Machine) -> Iterator[_Spe
         yield from _link(model, part)
 
 
-def _body(model: Model) -> Iterator[_Spec]:
+def _body(model: Model, part: Body) -> Iterator[_Spec]:
     train = model.motion is _TRAIN
+    # What does not turn is not asked for an inertia first.
+    still = part.inertia is None and part.dof is not None and not any(one[0] == "r" for one in part.dof)
     if not train:
         yield _Spec(("mass",), "mass")
     if model.motion is _SPACE:
         for key in _MOMENTS:
-            yield _Spec(("inertia", key), key, group="inertia", needed=True, emptied=(("inertia",),))
+            yield _Spec(("inertia", key), key, still, group="inertia", needed=True, emptied=(("inertia",),))
         for key in ("Pxy", "Pxz", "Pyz"):
             yield _Spec(("inertia", key), key, more=True, group="inertia")
     else:
-        yield _Spec(("inertia",), "inertia", motions=(_PLANE, _TRAIN))
+        yield _Spec(("inertia",), "inertia", still, motions=(_PLANE, _TRAIN))
     yield _NAME
     if train:
         yield _Spec(("mass",), "mass", more=True)

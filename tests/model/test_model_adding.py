@@ -226,6 +226,15 @@ def test_orders_and_frequencies_are_told_apart_and_excitations_are_called_by_the
         add_excitation(model, machine, "0")
 
 
+def test_an_order_may_be_of_the_speed_of_another_shaft_a_fixed_frequency_is_of_none():
+    model, one, other, _ = drawn(Motion.SHAFT_TRAIN)
+    model, machine = add_machine(model, "train", "1485 rpm", "10 %", on=one)
+    model, _ = add_excitation(model, machine, "1x", at=End(body=other), of=other)
+    model, _ = add_excitation(model, machine, "100 Hz", at=End(body=other), of=other)
+    assert [one.of for one in model.machines[0].excitations] == [other, None]
+    assert faults(model) == ()
+
+
 def test_a_machine_of_fixed_frequencies_alone_has_no_speed():
     model, machine = add_machine(Model(), "hall", "", "10 %")
     assert model.machines[0].speed is None

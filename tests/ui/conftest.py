@@ -20,7 +20,11 @@ from modalview.ui.worker import Worker
 PUMP = demo_models() / "1-cooling-water-pump" / "as-built.keepclear"
 FAN = demo_models() / "2-supply-fan" / "steel-legs.keepclear"
 # What the offscreen platform says of itself, not of the program.
-NOT_OURS = ("This plugin does not support propagateSizeHints()", "This plugin does not support raise()")
+NOT_OURS = (
+    "This plugin does not support propagateSizeHints()",
+    "This plugin does not support raise()",
+    "This plugin does not support grabbing the keyboard",
+)
 
 
 @pytest.fixture(scope="session", autouse=True)

@@ -77,8 +77,8 @@ def test_of_a_part_just_drawn_the_value_tolerance_and_name_are_typed_one_after_t
     press(sheet.window().focusWidget(), Qt.Key.Key_Return)
     QTest.keyClicks(sheet.window().focusWidget(), "3 %")
     press(sheet.window().focusWidget(), Qt.Key.Key_Return)
-    assert sheet.window().focusWidget() is form.row("inertia").value
-    press(sheet.window().focusWidget(), Qt.Key.Key_Return)
+    assert form.row("inertia").value.isHidden()  # a mass does not turn
+    assert sheet.window().focusWidget() is form.row("name").value
     QTest.keyClicks(sheet.window().focusWidget(), "motor")
     press(sheet.window().focusWidget(), Qt.Key.Key_Return)
     body = part(document, one)
@@ -90,6 +90,13 @@ def test_of_a_part_just_drawn_the_value_tolerance_and_name_are_typed_one_after_t
     )
     assert form.isHidden()
     assert sheet.hasFocus()
+
+
+def test_a_body_that_turns_is_asked_for_its_inertia_at_once(document, form):
+    document.model = Model(motion=Motion.PLANE)
+    document.model, one = add_body(document.model, "body", (0.0, 1.0), (0.8, 0.4))
+    form.show_parts((one,), BESIDE, fresh=True)
+    assert not form.row("inertia").value.isHidden()
 
 
 def test_enter_on_a_starting_value_passes_on_and_gives_nothing(document, form):

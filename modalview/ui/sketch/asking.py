@@ -1,6 +1,6 @@
 """Small questions of the sheet: one text, or a part by its name."""
 
-from collections.abc import Callable
+from collections.abc import Callable, Iterable
 
 from PySide6.QtCore import Qt
 from PySide6.QtGui import QKeyEvent
@@ -62,6 +62,21 @@ class AskText(QDialog):
             self.close()
 
 
+def found(parts: Iterable[tuple[str, str]], text: str) -> list[tuple[str, str]]:
+    """Return the parts whose words hold all that is typed; those that begin with it, or hold it whole, first.
+
+    >>> found([("k2", "mount 1 left"), ("k3", "mount 2 left")], "mount 2")
+    [('k3', 'mount 2 left')]
+    >>> found([("mt2", "mount 1 left mt2"), ("mt4", "mount 2 left mt4")], "mount 2 left")[0]
+    ('mt4', 'mount 2 left mt4')
+    """
+    whole = " ".join(text.casefold().split())
+    holding = [one for one in parts if all(word in one[1].casefold() for word in whole.split())]
+    return sorted(
+        holding, key=lambda one: (not one[1].casefold().startswith(whole), whole not in one[1].casefold())
+    )
+
+
 class FindPart(QDialog):
     """Lists the parts whose name, id or kind holds what is typed; Enter shows the one marked."""
 
@@ -91,11 +106,9 @@ class FindPart(QDialog):
 
     def _filter(self, text: str) -> None:
         self.list.clear()
-        wanted = text.casefold().split()
-        for part, words in self._parts:
-            if all(word in words.casefold() for word in wanted):
-                item = QListWidgetItem(words, self.list)
-                item.setData(_ID, part)
+        for part, words in found(self._parts, text):
+            item = QListWidgetItem(words, self.list)
+            item.setData(_ID, part)
         self.list.setCurrentRow(0)
 
     def _go(self) -> None:

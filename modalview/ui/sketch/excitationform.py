@@ -55,11 +55,11 @@ class _Ask:
 _MARGIN_NEEDED = 'a margin is required and has no default; type the one that you answer for, such as "15 %"'
 _ASKED = (
     _Ask("machine", "machine"),
-    _Ask("machine name", "its name", "such as fan", machine=True),
+    _Ask("machine name", "name of machine", "such as fan", machine=True),
     _Ask(
         "speed",
-        "its speed",
-        "such as 600 to 1800 rpm",
+        "speed of machine",
+        "600 to 1800 rpm",
         lambda text, _: typed_speed(text),
         "an order needs the machine's speed, such as 2950 rpm or 600 to 1800 rpm",
         machine=True,
@@ -67,7 +67,7 @@ _ASKED = (
     ),
     _Ask(
         "margin",
-        "its margin",
+        "margin wanted",
         "such as 15 %",
         lambda text, _: typed_margin(text),
         _MARGIN_NEEDED,
@@ -82,6 +82,7 @@ _ASKED = (
         'give an order of the speed, such as "1x", or a fixed frequency, such as "100 Hz"',
         quantity=q.FREQUENCY,
     ),
+    _Ask("of", "order of the speed of"),
     _Ask("direction", "direction", "", lambda text, _: read_composite(Excitation, "direction", text)),
     _Ask("magnitude", "how strong", "", lambda text, model: typed_magnitude(text, model.motion)),
     _Ask("name", "name", "such as unbalance"),
@@ -100,6 +101,7 @@ _STRENGTH_HINTS = {
     Motion.PLANE: "400 N or G 6.3 of 320 kg",
     Motion.SPACE: "400 N or G 6.3 of 320 kg",
 }
+_BLANKS = {"machine": "a new machine", "of": "the machine"}
 # A single direction needs no asking.
 _ONLY_DIRECTION = {Motion.SINGLE_AXIS: "y", Motion.SHAFT_TRAIN: "rz"}
 
@@ -163,13 +165,17 @@ class ExcitationForm(FloatingForm):
 
     def _asked(self) -> list[_Ask]:
         model = self._document.model
-        asked = [one for one in _ASKED if one.key != "on" or model.motion is not Motion.SINGLE_AXIS]
-        return [one for one in asked if one.key != "machine" or model.machines]
+        absent = set() if model.machines else {"machine"}
+        if model.motion is Motion.SINGLE_AXIS:
+            absent.add("on")
+        if model.motion is not Motion.SHAFT_TRAIN:  # elsewhere all shafts of a machine turn alike
+            absent.add("of")
+        return [one for one in _ASKED if one.key not in absent]
 
     def _line(self, ask: _Ask) -> FormLine:
         model = self._document.model
         machines = tuple((one.id, one.name or one.id) for one in model.machines)
-        choices = {"machine": machines, "on": bodies_of(model)}.get(ask.key, ())
+        choices = {"machine": machines, "on": bodies_of(model), "of": bodies_of(model)}.get(ask.key, ())
         text = {"machine": self._machine, "direction": _ONLY_DIRECTION.get(model.motion, "")}.get(ask.key, "")
         if ask.key == "on" and model.motion is Motion.SHAFT_TRAIN and self._at is not None:
             text = self._at.body or ""
@@ -182,7 +188,7 @@ class ExcitationForm(FloatingForm):
             quantity=ask.quantity,
             hint=hints.get(ask.key, ask.hint),
             choices=choices,
-            blank="a new machine" if ask.key == "machine" else "not told",
+            blank=_BLANKS.get(ask.key, "not told"),
         )
 
     def _fold(self) -> None:
@@ -281,6 +287,7 @@ class ExcitationForm(FloatingForm):
             machine,
             self._text("rate"),
             at=self._at,
+            of=self._text("of") or None,
             direction=read_composite(Excitation, "direction", direction) if direction else None,
             magnitude=self._text("magnitude"),
             name=self._text("name"),
