@@ -21,7 +21,8 @@ BLOCK = 2 * ROW
 STRIP = 21.0  # height of the block as a strip of one line
 MOST_SHARE = 0.13  # of the sheet: a block that would take more is a strip
 PADDING = 14.0  # of a cell, both sides
-SWITCH = 200.0  # pixels beside the axes of a space model for the switch of the views
+SWITCH = (212.0, 22.0)  # of the switch of the views, width and height
+SWITCH_LEFT, SWITCH_TOP = 92.0, 104.0  # where it stands: beside the axes, or below them
 AXES = 60.0  # pixels that the axes keep beside the strip
 TURNING = "rotation about the shafts"
 TITLE_SHARE = (0.45, 0.68)  # of the block, for the left column: least and most
@@ -188,12 +189,24 @@ def axes(
             high[0] += wide
     rooms = [[0.0, 0.0, *high]]
     if motion is Motion.SPACE:
-        rooms.append([0.0, 0.0, float(high[0]) + SWITCH * text_scale, 34.0 * text_scale])
+        x, y, wide, tall = switch_room(text_scale, room)
+        rooms.append([x, y, x + wide, y + tall])
     if viewpoint is not Viewpoint.TURNED:
         y = float(high[1]) + 4.0 * text_scale
         items.append(Text(14.0, y, f"{viewpoint} view", Role.MUTED, Size.SMALL))
         rooms[0][3] = y + 10.0 * text_scale
     return tuple(items), np.array(rooms)
+
+
+def switch_room(text_scale: float, room: float) -> tuple[float, float, float, float]:
+    """Return x, y, width, height kept free for the window's switch of the views, in pixels.
+
+    Beside the axes of a space model, or below them where it would pass ``room``, pixels from the left.
+    """
+    wide, high = (side * text_scale for side in SWITCH)
+    if SWITCH_LEFT * text_scale + wide < room:
+        return SWITCH_LEFT * text_scale, 8.0, wide, high
+    return 8.0, SWITCH_TOP * text_scale, wide, high
 
 
 def captioned(drawing: Drawing, caption: str) -> Drawing:

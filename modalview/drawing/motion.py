@@ -218,7 +218,8 @@ def _arrows(geometry: SheetGeometry, posed: Pose, factor: complex) -> tuple[Item
     start = beside - steps / 2
     items: tuple[Item, ...] = (Lines(arrow(start[long], steps[long]), Role.ACCENT, 2.0),)
     centres = geometry.points.rest[geometry.centres] + np.real(factor * posed.centre_steps)
-    items += _sight_arrows(beside, np.real(way * posed.nearing), moving)
+    below = beside + np.where(long, 30.0, 0.0)[:, None] * [0.0, 1.0]  # an arrow has the middle
+    items += _sight_arrows(below, np.real(way * posed.nearing), moving)
     return items + _turn_arrows(centres[moving], 12.0, turns[moving])
 
 

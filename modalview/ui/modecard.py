@@ -58,6 +58,7 @@ class ModeCard(QStyledItemDelegate):
     def __init__(self, swing: Swing, parent: QObject | None = None) -> None:
         super().__init__(parent)
         self._swing = swing
+        self._viewpoint = "turned"
         self._background = Later(self)
         self._background.done.connect(self._on_laid_out)
         self._theme: Theme = LIGHT
@@ -84,6 +85,12 @@ class ModeCard(QStyledItemDelegate):
         self._model = model
         self._posed.clear()
         self._still.clear()
+
+    def look_from(self, viewpoint: str) -> None:
+        """Draw the small pictures of a space model from elsewhere (drawing.view.Viewpoint)."""
+        if viewpoint != self._viewpoint:
+            self._viewpoint, self._drawn = viewpoint, None
+            self.set_model(self._model)
 
     def close_threads(self) -> None:
         """Wait for a layout under way."""
@@ -241,9 +248,10 @@ class ModeCard(QStyledItemDelegate):
         if place.height() < _LEAST_PICTURE or self._model is None:
             return size, None
         from modalview.drawing import modepicture  # noqa: PLC0415  (numpy comes after the first paint)
+        from modalview.drawing.view import Viewpoint  # noqa: PLC0415
 
         if size not in self._small:
-            lay_out = partial(modepicture.mode_geometry, self._model, *size)
+            lay_out = partial(modepicture.mode_geometry, self._model, *size, Viewpoint(self._viewpoint))
             if len(self._model.bodies) <= AT_ONCE:
                 self._small[size] = lay_out()
             elif not self._background.waits_for(size):

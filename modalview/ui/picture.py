@@ -40,6 +40,8 @@ class Look:
         Whether the reasoning is unfolded.
     text_percent : int
         Size of text.
+    view : str
+        From where a space model is seen.
     """
 
     width: int = 1280
@@ -50,6 +52,7 @@ class Look:
     page: str = "modes"
     why: bool = False
     text_percent: int = 100
+    view: str = "turned"
 
 
 def window_picture(file: Path | None, path: Path, look: Look) -> None:
@@ -88,6 +91,7 @@ def _settings(folder: Path, look: Look) -> Settings:
     settings.set(names.AUTOMATIC, look.automatic)
     settings.set(names.TEXT_SIZE, look.text_percent)
     settings.set(names.MOVE, False)
+    settings.set(names.VIEWPOINT, look.view)
     return settings
 
 

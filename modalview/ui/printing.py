@@ -50,6 +50,8 @@ class Content:
         Whether the Gershgorin bounds stand on the scale.
     printed : str
         Date and time.
+    viewpoint : str
+        From where a space model is seen (drawing.view.Viewpoint).
     """
 
     model: Any
@@ -58,6 +60,7 @@ class Content:
     solution: Any = None
     discs: bool = True
     printed: str = ""
+    viewpoint: str = "turned"
 
 
 Placed = tuple[float, float, Any]  # where a drawing stands on the page, pixels, and the drawing
@@ -72,7 +75,7 @@ def page(content: Content, width: float, height: float) -> tuple[Placed, ...]:
     width, height : float
         Of the page within its margins, pixels of drawings.
     """
-    from modalview.drawing import furniture, scale, scalecontent, sheet  # noqa: PLC0415  (numpy comes late)
+    from modalview.drawing import furniture, scale, scalecontent, sheet, view  # noqa: PLC0415  (numpy comes late)
 
     words = _words(content, width, height)
     below = words.bounds[3]
@@ -85,8 +88,10 @@ def page(content: Content, width: float, height: float) -> tuple[Placed, ...]:
         checked = str(outlook.verdict or "nothing to check")
         title = furniture.title_lines(content.model, checked=checked, freedoms=outlook.coordinates)
         wide = _SHEET_SHARE * width
+    seen = view.Viewpoint(content.viewpoint)
+    geometry = sheet.sheet_geometry(content.model, wide, high, viewpoint=seen)
     placed: list[Placed] = [
-        (0.0, 0.0, sheet.sheet_drawing(sheet.sheet_geometry(content.model, wide, high), title)),
+        (0.0, 0.0, sheet.sheet_drawing(geometry, title)),
         (0.0, high, words),
     ]
     if outlook is not None:
@@ -235,6 +240,7 @@ class Printing(QObject):
             analysis.solution if analysis.solution_current and not analysis.looking else None,
             discs=self._settings.get(names.DISCS),
             printed=time.strftime("%Y-%m-%d %H:%M"),
+            viewpoint=self._window.sheet.viewpoint,
         )
 
     def print_(self) -> None:

@@ -122,6 +122,13 @@ AMPLITUDE = Setting(
     "amplitude_percent", int, 60, "How far the chosen mode moves on the sheet.", low=5, high=100
 )
 SPEED = Setting("speed_steps", int, 0, "How fast it moves, in tenths of a doubling.", low=-20, high=20)
+VIEWPOINT = Setting(
+    "viewpoint",
+    str,
+    "turned",
+    "From where the window last looked at a model in space.",
+    choices=tuple((name, name) for name in ("turned", "front", "side", "top")),
+)
 GEOMETRY = Setting("window_geometry", QByteArray, QByteArray(), "Where the window stood.")
 FOLDER = Setting("folder", str, "", "Folder of the last file.")
 RECENT = Setting("recent_files", list, [], "Files opened last, latest first.")
@@ -137,6 +144,7 @@ ALL = (
     MOVE,
     AMPLITUDE,
     SPEED,
+    VIEWPOINT,
     GEOMETRY,
     FOLDER,
     RECENT,

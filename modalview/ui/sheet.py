@@ -19,7 +19,7 @@ from PySide6.QtGui import (
 )
 from PySide6.QtWidgets import QSizePolicy, QWidget
 
-from modalview.model.parts import Model
+from modalview.model.parts import Model, Motion
 from modalview.ui import crowd
 from modalview.ui.canvas import paint_drawing, painted
 from modalview.ui.crowd import CrowdPainter
@@ -51,6 +51,7 @@ class Sheet(QWidget):
         self._swing = swing
         self._model: Model | None = None
         self._view: Any = None
+        self.viewpoint = "turned"  # of a space model
         self._geometry: Any = None
         self._title: Any = None
         self._mode: Any = None
@@ -155,6 +156,13 @@ class Sheet(QWidget):
         """What is laid out (drawing.geometry.SheetGeometry), or None."""
         return self._geometry
 
+    def look_from(self, viewpoint: str) -> None:
+        """Show a space model from elsewhere (drawing.view.Viewpoint), fitted anew."""
+        if viewpoint != self.viewpoint:
+            self.viewpoint = viewpoint
+            self._view = None
+            self._rebuild()
+
     def hold_view(self) -> None:
         """Keep scale and place from now on, whatever is drawn or edited."""
         if self._view is None and self._geometry is not None:
@@ -201,6 +209,7 @@ class Sheet(QWidget):
         if self._model is None:
             return
         from modalview.drawing import sheet  # noqa: PLC0415  (numpy comes after the first paint)
+        from modalview.drawing.view import Viewpoint  # noqa: PLC0415
 
         lay_out = partial(
             sheet.sheet_geometry,
@@ -208,13 +217,20 @@ class Sheet(QWidget):
             self.width(),
             self.height(),
             text_scale=self._text_scale,
-            view=self._view,
+            view=self._view if self._fits_viewpoint() else None,
+            viewpoint=Viewpoint(self.viewpoint),
         )
         if len(self._model.bodies) + len(self._model.links) <= AT_ONCE:
             self._background.forget()
             self._show_geometry("sheet", lay_out())
         else:
             self._background.ask("sheet", lay_out)
+
+    def _fits_viewpoint(self) -> bool:
+        """Whether scale and place that were kept are of the view that is shown now."""
+        return (
+            self._model.motion is not Motion.SPACE or getattr(self._view, "viewpoint", "") == self.viewpoint
+        )
 
     def _show_geometry(self, _key: str, geometry: Any) -> None:
         self._geometry = geometry

@@ -29,6 +29,7 @@ def main(arguments: Sequence[str] | None = None) -> int:
         page=asked.page,
         why=asked.why,
         text_percent=asked.text,
+        view=asked.view,
     )
     try:
         window_picture(asked.file, asked.out, look)
@@ -38,6 +39,7 @@ def main(arguments: Sequence[str] | None = None) -> int:
     return 0
 
 
+_VIEWS = ("turned", "front", "side", "top")
 _PAGES = ("sheet", "modes", "damped", "plane", "values")
 
 
@@ -52,6 +54,7 @@ def _parser() -> argparse.ArgumentParser:
     parser.add_argument("--page", choices=_PAGES, default="modes", help="what stands under the sheet")
     parser.add_argument("--why", action="store_true", help="unfold the reasoning")
     parser.add_argument("--text", type=int, default=100, help="size of text in per cent")
+    parser.add_argument("--view", choices=_VIEWS, default="turned", help="of a space model")
     return parser
 
 

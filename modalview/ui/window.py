@@ -23,6 +23,7 @@ from modalview.ui.ondisk import DiskStrip, FileWatch
 from modalview.ui.printing import Printing
 from modalview.ui.settings import Setting, Settings
 from modalview.ui.sketch.sketching import Sketching
+from modalview.ui.viewing import Viewing
 from modalview.ui.worker import Worker
 
 if TYPE_CHECKING:
@@ -64,6 +65,7 @@ class Window(Frame):
         self._patience = QTimer(self, singleShot=True, interval=_BLINK_MS)
         self._connect()
         self.sketching = Sketching(self)  # hears of a change after the sheet was told
+        self.viewing = Viewing(self)
         self._recall()
         self.show_document()
 
