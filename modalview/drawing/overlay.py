@@ -132,11 +132,26 @@ def hint_line(text: str, width: float, height: float, text_scale: float) -> tupl
     return box, *lines
 
 
-def _wrapped(text: str, room: float, text_scale: float) -> list[str]:
+def invitation_items(
+    lines: tuple[str, ...], width: float, height: float, text_scale: float
+) -> tuple[Item, ...]:
+    """Return what an empty sheet says in its middle: the first line stands out."""
+    texts: list[Item] = []
+    y = 0.5 * height
+    for number, line in enumerate(lines):
+        size = Size.SMALL if number else Size.NORMAL
+        for row in _wrapped(line, width - 60.0, text_scale, size):
+            role = Role.MUTED if number else Role.INK
+            texts.append(Text(0.5 * width, y, row, role, size, Anchor.MIDDLE, bold=not number))
+            y += 1.25 * line_height(Size.NORMAL, text_scale=text_scale)
+    return tuple(texts)
+
+
+def _wrapped(text: str, room: float, text_scale: float, size: Size = Size.SMALL) -> list[str]:
     rows: list[str] = [""]
     for word in text.split():
         longer = f"{rows[-1]} {word}".strip()
-        if rows[-1] and text_width(longer, Size.SMALL, text_scale=text_scale) > room:
+        if rows[-1] and text_width(longer, size, text_scale=text_scale) > room:
             rows.append(word)
         else:
             rows[-1] = longer

@@ -41,6 +41,11 @@ class Analysis(QObject):
         worker.answered.connect(self._on_answered)
 
     @property
+    def model(self) -> Model | None:
+        """The model that is studied: the one on the sheet."""
+        return self._model
+
+    @property
     def damped_current(self) -> bool:
         """Whether the damped modes are those of the model on the sheet."""
         return self.damped is not None and self.damped.outlook.request.model is self._model

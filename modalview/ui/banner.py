@@ -18,6 +18,7 @@ from PySide6.QtWidgets import (
 from modalview.ui.analysis import Analysis
 from modalview.ui.symbols import VerdictSign
 from modalview.ui.theme import LIGHT, Theme
+from modalview.ui.unfinished import missing, refusal_text, unchecked
 from modalview.ui.wording import kept_together, one_line
 
 _BLINK_MS = 250
@@ -212,7 +213,10 @@ class Banner(QFrame):
 def _said(analysis: Analysis) -> tuple[str | None, str, str]:
     """Return verdict, word and sentence."""
     if analysis.refusal is not None and analysis.outlook is None:
-        return None, "Cannot be analysed", " ".join(str(analysis.refusal).splitlines())
+        lacking = missing(analysis.model)
+        if lacking:  # a drawing that goes on is no error
+            return None, "Not finished", lacking
+        return None, "Cannot be analysed", refusal_text(analysis.refusal)
     if analysis.outlook is None:
         return None, "", "Reading the model…" if analysis.looking else ""
     known: Any = analysis.solution if analysis.solution_current else analysis.outlook
@@ -221,5 +225,5 @@ def _said(analysis: Analysis) -> tuple[str | None, str, str]:
         sentence = f"{sentence} The modes were not found: {analysis.refusal}"
     verdict = analysis.outlook.verdict
     if verdict is None:
-        return None, "", sentence
+        return None, "", unchecked(analysis.model) or sentence
     return str(verdict), _WORDS[str(verdict)], sentence

@@ -60,6 +60,7 @@ class NewSheet(QDialog):
         self.list.setAccessibleName("Where to begin")
         for choice in CHOICES:
             QListWidgetItem(choice.title, self.list)
+        self.list.setMinimumWidth(self.list.sizeHintForColumn(0) + 2 * self.fontMetrics().height())
         self.sentence = QLabel(self)
         self.sentence.setWordWrap(True)
         self._form = QWidget(self)

@@ -184,7 +184,7 @@ def test_a_half_drawn_model_opens_and_is_told_what_it_lacks(start, edited, qtbot
     (window,) = windows.all
     assert window.document.model == half.model
     qtbot.waitUntil(lambda: window.analysis.refusal is not None)
-    assert window.banner.word.text() == "Cannot be analysed"
+    assert window.banner.word.text() == "Not finished"
 
 
 def test_a_file_that_cannot_be_read_is_told_and_the_start_goes_on(start, edited, own, qtbot):

@@ -12,6 +12,7 @@ from modalview.model.parts import Body, Link, Model, Motion, Support
 from modalview.ui.document import Document
 from modalview.ui.sketch.kinds import BY_KEY, BY_NAME, ToolKind
 from modalview.ui.sketch.tool import Number, Pointer, Tool
+from modalview.ui.unfinished import invitation
 
 Maker = Callable[[Model], tuple[Model, str]]
 _STEPS = {
@@ -524,14 +525,17 @@ class Hand(QObject):
             return ()
         from modalview.drawing import overlay  # noqa: PLC0415  (see above)
 
-        items = overlay.chosen_items(self.geometry, self.chosen)
+        geometry = self.geometry
+        items = overlay.chosen_items(geometry, self.chosen)
+        if not self.model.bodies and self.kind.name == "choose":
+            words = invitation(self.model.motion)
+            items += overlay.invitation_items(words, geometry.width, geometry.height, geometry.text_scale)
         if self._tool is not None:
             items += self._tool.items()
             items += self._notes()
         if self.cursor is not None:
             items += overlay.cursor_items(*self.cursor)
         if self.hint:
-            geometry = self.geometry
             items += overlay.hint_line(self.hint, geometry.width, geometry.height, geometry.text_scale)
         return items
 

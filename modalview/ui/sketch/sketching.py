@@ -10,6 +10,7 @@ from modalview.ui.sketch.excitationform import ExcitationForm
 from modalview.ui.sketch.hand import Hand
 from modalview.ui.sketch.numbers import NumberEntry
 from modalview.ui.sketch.partform import PartForm
+from modalview.ui.unfinished import invitation
 
 
 class Sketching(QObject):
@@ -88,7 +89,10 @@ class Sketching(QObject):
     def _on_opened(self) -> None:
         self.hand.choose(())
         self.hand.take("choose")
-        self.palette.show_motion(self._window.document.model.motion)
+        model = self._window.document.model
+        self.palette.show_motion(model.motion)
+        told = "" if model.bodies else " ".join(invitation(model.motion))
+        self._window.sheet.setAccessibleDescription(told)
 
     # Values beside a part
 
