@@ -26,7 +26,12 @@ def draw(path: Path, title: str, series: Mapping[str, Sequence[tuple[int, float,
         for which, dash in ((1, ""), (2, ' stroke-dasharray="5 4"')):
             line = " ".join(f"{across(entry[0]):.1f},{upward(entry[which]):.1f}" for entry in rows)
             parts.append(f'<polyline points="{line}" fill="none" stroke="{colour}" stroke-width="2"{dash}/>')
-        parts.append(f'<text x="{EDGE + 20}" y="{66 + 18 * row}" fill="{colour}">{name}</text>')
+            parts += [
+                f'<circle cx="{across(entry[0]):.1f}" cy="{upward(entry[which]):.1f}" r="3" fill="{colour}"/>'
+                for entry in rows
+            ]
+        label = f"{name}{_power(rows)}"
+        parts.append(f'<text x="{EDGE + 20}" y="{66 + 18 * row}" fill="{colour}">{label}</text>')
     parts.append(_mark(WIDTH / 2, HEIGHT - 20, "degrees of freedom; dashed: scipy eigsh", "middle"))
     body = "\n".join(parts)
     path.write_text(
@@ -34,6 +39,15 @@ def draw(path: Path, title: str, series: Mapping[str, Sequence[tuple[int, float,
         f'font-size="13"><rect width="100%" height="100%" fill="white"/>\n{body}\n</svg>\n',
         encoding="utf-8",
     )
+
+
+def _power(rows: Sequence[tuple[int, float, float]]) -> str:
+    """Return the power of the size with which own and other time grow between the last two sizes."""
+    if len(rows) < 2:
+        return ""
+    (n, own, other), (larger, longer, others) = rows[-2:]
+    first, second = (math.log(b / a) / math.log(larger / n) for a, b in ((own, longer), (other, others)))
+    return f": n^{first:.1f} at the end, dashed n^{second:.1f}"
 
 
 def _scale(low: float, high: float, start: float, stop: float):

@@ -118,7 +118,7 @@ def test_products_that_cancel_keep_their_last_digit():
 
 
 def test_an_edge_moves_as_far_as_it_may_where_rounding_is_wide(monkeypatch):
-    # a fifth share for rounding: 2.1 times it just fits beside the edge, moved out by a quarter more
+    # 2.1 times this share, and an edge a quarter farther out than that, just fit into a millionth
     monkeypatch.setattr(relative_module, "SHARES", (2e-7,))
     pencil = softly_held(1e12)
     for share in (0.9, 1 - 1e-5, 1 + 1e-5, 1.1):
