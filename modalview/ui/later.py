@@ -1,11 +1,16 @@
 """Work that would hold the window up, done in a thread of its own: layouts of large drawings and tables."""
 
 from collections.abc import Callable, Hashable
+from threading import Lock
 from typing import Any
 
 from PySide6.QtCore import QObject, QThreadPool, QTimer, Signal, Slot
 
 from modalview.ui.garbage import few_collections
+
+# One piece of work at a time, whoever asked: each thread that computes takes its share of the interpreter
+# from the window's own.
+_TURN = Lock()
 
 
 class Later(QObject):
@@ -26,10 +31,12 @@ class Later(QObject):
         ticket = self._wanted[key] = object()
 
         def run() -> None:
-            if self._wanted.get(key) is ticket:
+            with _TURN:
+                if self._wanted.get(key) is not ticket:
+                    return
                 with few_collections():
                     result = work()
-                self._finished.emit(key, ticket, result)
+            self._finished.emit(key, ticket, result)
 
         # After what the window does just now: a thread that computes makes each of its calls into Qt wait.
         QTimer.singleShot(0, self, lambda: self._pool.start(run))

@@ -8,7 +8,7 @@ from PySide6.QtCore import QModelIndex, QObject, QPersistentModelIndex, QRectF, 
 from PySide6.QtGui import QColor, QFont, QFontMetricsF, QPainter, QPen, QPixmap
 from PySide6.QtWidgets import QStyle, QStyledItemDelegate, QStyleOptionViewItem
 
-from modalview.model.parts import Model
+from modalview.model.parts import Body, Model, Motion
 from modalview.ui.canvas import paint_drawing
 from modalview.ui.later import Later
 from modalview.ui.modelist import (
@@ -29,7 +29,7 @@ _RADIUS = 6.0
 _SMALL = 0.88  # of the text size
 _PALE = 0.55  # of a picture that is out of date
 # More bodies than this are laid out in a thread.
-AT_ONCE = 30
+AT_ONCE = 12
 _BARS = 3
 _LEAST_PICTURE = 24  # pixels of height
 # Least and greatest width of a card, in heights of a line.
@@ -313,7 +313,23 @@ def _drawn(model: Model | None) -> Any:
     links = tuple(
         (type(one), one.from_, one.to, *(getattr(one, name, None) for name in _SHAPES)) for one in model.links
     )
-    return model.motion, model.bodies, model.supports, links
+    bodies = tuple(
+        (
+            one.id,
+            one.position,
+            one.drawn,
+            one.dof,
+            one.mass is None or one.mass.si == 0,
+            _seen_inertia(model, one),
+        )
+        for one in model.bodies
+    )
+    return model.motion, bodies, model.supports, links
+
+
+def _seen_inertia(model: Model, body: Body) -> Any:
+    """Return what the size of a disc follows in a shaft train; elsewhere whether there is any."""
+    return body.inertia if model.motion is Motion.SHAFT_TRAIN else body.inertia is None
 
 
 # Fields of links, other than their ends, that change how they are drawn.

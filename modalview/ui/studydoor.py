@@ -4,6 +4,7 @@ import gc
 from collections.abc import Callable
 from dataclasses import dataclass
 from functools import cache
+from importlib import import_module
 from typing import Any
 
 from modalview.model.parts import Body, End, Model, Spring, Support
@@ -48,7 +49,11 @@ def load_study() -> Study:
 
 def load_drawing() -> None:
     """Import what draws, so that the first sheet has not to wait for it."""
-    from modalview.drawing import modepicture, motion, paint, scale, sheet  # noqa: F401, PLC0415
+    for name in _DRAWING:
+        import_module(f"modalview.drawing.{name}")
+
+
+_DRAWING = ("hits", "modepicture", "motion", "overlay", "paint", "scale", "sheet", "snap", "toolicons")
 
 
 def _smallest() -> Model:

@@ -9,6 +9,7 @@ from conftest import FAN, PUMP, settle
 from modalview.store import read_model
 from modalview.ui import garbage
 from modalview.ui.errand import Errand
+from modalview.ui.later import Later
 
 
 @pytest.fixture
@@ -108,3 +109,23 @@ def test_a_slow_reading_is_told_at_the_foot(pump):
     assert pump.statusBar().currentMessage() == words
     pump.show_reading("")
     assert pump.statusBar().currentMessage() == ""
+
+
+def test_pieces_of_work_of_several_places_are_done_one_at_a_time(qapp, qtbot):
+    del qapp
+    places, together, most, done = [Later() for _ in range(3)], [0], [0], []
+
+    def work():
+        together[0] += 1
+        most[0] = max(most[0], together[0])
+        sum(range(20_000))
+        together[0] -= 1
+
+    for place in places:
+        place.done.connect(lambda key, _result: done.append(key))
+        place.ask("work", work)
+        assert place.waits_for("work")
+    qtbot.waitUntil(lambda: len(done) == len(places))
+    assert most == [1]
+    for place in places:
+        place.close()
