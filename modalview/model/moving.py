@@ -213,7 +213,7 @@ class _Extent:
         return self.middle + sign * self.half
 
 
-def aligned(model: Model, ids: Collection[str], edge: str) -> Model:
+def aligned(model: Model, ids: Collection[str], edge: str, axes: tuple[int, int] | None = None) -> Model:
     """Return the model with parts moved to one line: that of the outermost edge, or of the middle of all.
 
     Parameters
@@ -223,17 +223,24 @@ def aligned(model: Model, ids: Collection[str], edge: str) -> Model:
     edge : str
         "left", "centre", "right", "top", "middle" or "bottom", of the bodies as drawn. A body
         that has no drawn size, and a support, counts as a point.
+    axes : pair of int or None
+        Numbers of the coordinates that are seen sideways and upright; None is as the sheet usually stands.
+
+    Notes
+    -----
+    Along y of a space model bodies count as points: no file has their depth.
     """
     way, which = EDGES[edge]
-    extents = _extents(model, ids, way)
+    axis = _axis(model, way, axes)
+    extents = _extents(model, ids, axis)
     if len(extents) < 2:
         return model
     low, high = min(one.at("low") for one in extents), max(one.at("high") for one in extents)
     line = {"low": low, "middle": (low + high) / 2, "high": high}[which]
-    return _settled(model, {one.name: one.middle + line - one.at(which) for one in extents}, way)
+    return _settled(model, {one.name: one.middle + line - one.at(which) for one in extents}, axis)
 
 
-def spread(model: Model, ids: Collection[str], way: str) -> Model:
+def spread(model: Model, ids: Collection[str], way: str, axes: tuple[int, int] | None = None) -> Model:
     """Return the model with parts at even distances between the two outermost.
 
     Parameters
@@ -242,32 +249,41 @@ def spread(model: Model, ids: Collection[str], way: str) -> Model:
         Bodies and supports, at least three that have a position.
     way : str
         "sideways" or "upright"; distances are between centres of gravity.
+    axes : pair of int or None
+        As of `aligned`.
     """
-    extents = sorted(_extents(model, ids, way), key=lambda one: one.middle)
+    axis = _axis(model, way, axes)
+    extents = sorted(_extents(model, ids, axis), key=lambda one: one.middle)
     if len(extents) < 3:
         return model
     first, last = extents[0].middle, extents[-1].middle
     gap = (last - first) / (len(extents) - 1)
     inner = {one.name: first + gap * number for number, one in enumerate(extents[1:-1], 1)}
-    return _settled(model, inner, way)
+    return _settled(model, inner, axis)
 
 
-def _extents(model: Model, ids: Collection[str], way: str) -> list[_Extent]:
-    axis = upright_axis(model.motion) if way == "upright" else 0
+def _axis(model: Model, way: str, axes: tuple[int, int] | None) -> int:
+    """Return the number of the coordinate that lies one of the ways."""
+    sideways, upright = axes or (0, upright_axis(model.motion))
+    return upright if way == "upright" else sideways
+
+
+def _extents(model: Model, ids: Collection[str], axis: int) -> list[_Extent]:
+    upright = upright_axis(model.motion)
     found = []
     parts: tuple[Body | Support, ...] = (*model.bodies, *model.supports)
     for part in parts:
         if part.id in ids and part.position is not None:
             drawn = part.drawn if isinstance(part, Body) else None
-            size = (drawn.height if way == "upright" else drawn.width) if drawn else None
+            sizes = {0: drawn.width, upright: drawn.height} if drawn else {}
+            size = sizes.get(axis)
             half = decimal_of(size.si) / 2 if size else Decimal(0)
             found.append(_Extent(part.id, decimal_of(part.position[axis].si), half))
     return found
 
 
-def _settled(model: Model, middles: Mapping[str, Decimal], way: str) -> Model:
-    """Move parts so that their centres come to given coordinates along one way."""
-    axis = upright_axis(model.motion) if way == "upright" else 0
+def _settled(model: Model, middles: Mapping[str, Decimal], axis: int) -> Model:
+    """Move parts so that their centres come to given coordinates along one axis."""
     parts: tuple[Body | Support, ...] = (*model.bodies, *model.supports)
     positions: dict[str, Point] = {part.id: part.position for part in parts if part.position is not None}
     steps = {}

@@ -6,6 +6,7 @@ from modalview.drawing import hits
 from modalview.drawing.snap import Wish
 from modalview.model.moving import moved, reattached, resized
 from modalview.model.parts import Model
+from modalview.ui.sketch import depth
 from modalview.ui.sketch.joining import Join
 from modalview.ui.sketch.tool import Number, Pointer, Tool
 from modalview.ui.sketch.trial import Trial
@@ -24,6 +25,8 @@ class Choose(Tool):
         self._pressed: Pointer | None = None
         self._work: Tool | None = None  # what a drag turned out to be
         self._begin: Any = None
+        self._before: tuple[str, ...] = ()  # chosen when the button went down
+        self.clicked: str | None = None  # what the last click was on
 
     @property
     def busy(self) -> bool:
@@ -33,6 +36,8 @@ class Choose(Tool):
     def press(self, at: Pointer) -> None:
         """Choose what is under the pointer, and be ready to drag it."""
         self._pressed = at
+        self._before = self.hand.chosen
+        self.clicked = None
         self._begin = self._beginning(at)
 
     def _beginning(self, at: Pointer) -> Any:
@@ -45,6 +50,9 @@ class Choose(Tool):
         part = hand.part_under(at)
         if part is None:
             return lambda: Band(hand, at)
+        if not at.add:  # one that was reached by repeated clicks stays in hand
+            part = next((one for one in hand.parts_under(at) if one in hand.chosen), part)
+        self.clicked = part
         if at.add:
             hand.toggle(part)
         elif part not in hand.chosen:
@@ -73,6 +81,16 @@ class Choose(Tool):
             part = self.hand.part_under(at)
             if part is not None:
                 self.hand.choose((part,))
+        elif pressed is not None and not at.add and self.clicked is not None:
+            self._next_behind(at)
+
+    def _next_behind(self, at: Pointer) -> None:
+        """Choose the next of what lies one behind the other, where the click was on what is chosen."""
+        parts = self.hand.parts_under(at)
+        if len(parts) > 1 and self._before == (self.clicked,) and self.clicked in parts:
+            following = parts[(parts.index(self.clicked) + 1) % len(parts)]
+            self.hand.choose((following,))
+            self.hand.say(f"{self.hand.name_of(following)} is chosen, {len(parts)} parts lie here")
 
     def cancel(self) -> bool:
         """Give back what was dragged."""
@@ -212,6 +230,11 @@ class Resize(Tool):
         self._middle = (x1 + x2) / 2, (y1 + y2) / 2
         view = self._geometry.view
         self._size = [(x2 - x1) / view.scale_x, (y2 - y1) / view.scale_y]
+        self._shown = ("width", "height")
+        if view.straight:
+            self._size, self._middle = depth.drawn_size(self._geometry, part)
+            seen = (("width", 0), ("height", 2))
+            self._shown = tuple(label for label, axis in seen if axis != depth.hidden(hand))
         self._typed: dict[str, float] = {}
 
     def drag(self, at: Pointer) -> None:
@@ -245,10 +268,8 @@ class Resize(Tool):
 
     def numbers(self) -> tuple[Number, ...]:
         """Width and height."""
-        return (
-            Number("width", self._typed.get("width", self._size[0]), q.LENGTH),
-            Number("height", self._typed.get("height", self._size[1]), q.LENGTH),
-        )
+        sizes = dict(zip(("width", "height"), self._size, strict=True))
+        return tuple(Number(label, self._typed.get(label, sizes[label]), q.LENGTH) for label in self._shown)
 
     def put(self, label: str, si: float) -> None:
         """Take a typed width or height."""
@@ -268,6 +289,7 @@ class Lead(Tool):
         self._link, self._side = link, side
         self._kind = next(one.kind for one in hand.model.links if one.id == link)
         self._join = Join(hand, self._kind)
+        self._join.kept = depth.of_end(hand, link, side)
 
     def drag(self, at: Pointer) -> None:
         """Show what the end would be on."""

@@ -197,17 +197,23 @@ class Editing(QObject):
 
     def _align(self, edge: str) -> None:
         chosen = self._hand.chosen
-        self._change(lambda model: aligned(model, chosen, edge), f"Align {edge}", 2)
+        axes = self._axes()
+        self._change(lambda model: aligned(model, chosen, edge, axes), f"Align {edge}", 2)
+
+    def _axes(self) -> tuple[int, int] | None:
+        """Return the axes seen, where a space model is seen straight."""
+        hand = self._hand
+        return hand.axes_shown() if hand.ready and hand.geometry.view.straight else None
 
     def spread_sideways(self) -> None:
         """Put the same distance between all, sideways."""
         chosen = self._hand.chosen
-        self._change(lambda model: spread(model, chosen, "sideways"), "Spread sideways", 3)
+        self._change(lambda model: spread(model, chosen, "sideways", self._axes()), "Spread sideways", 3)
 
     def spread_upright(self) -> None:
         """Put the same distance between all, upright."""
         chosen = self._hand.chosen
-        self._change(lambda model: spread(model, chosen, "upright"), "Spread upright", 3)
+        self._change(lambda model: spread(model, chosen, "upright", self._axes()), "Spread upright", 3)
 
     # The clipboard
 

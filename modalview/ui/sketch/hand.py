@@ -90,11 +90,11 @@ class Hand(QObject):
         own = snap.Wish(own.leave_out, own.free, start)
         return snap.snapped(geometry or self.geometry, at.x, at.y, own, through)
 
-    def world(self, x: float, y: float) -> Any:
-        """Return the world point under a pixel, in whole millionths of a metre."""
+    def world(self, x: float, y: float, through: Any = None) -> Any:
+        """Return the world point under a pixel, in whole millionths of a metre, as deep as another point."""
         from modalview.drawing import snap  # noqa: PLC0415  (see above)
 
-        return snap.world_at(self.geometry.view, x, y).round(6)
+        return snap.world_at(self.geometry.view, x, y, through).round(6)
 
     def grid(self, axis: int) -> float:
         """Return the step of the grid across (0) or up (1) the sheet, in metres."""
@@ -125,6 +125,15 @@ class Hand(QObject):
 
         part = sheet.part_at(self.geometry, at.x, at.y)
         return part or hits.foot_at(self.geometry, at.x, at.y)
+
+    def parts_under(self, at: Pointer) -> tuple[str, ...]:
+        """Return the ids of all that lies under a pointer, one behind the other in a space model."""
+        from modalview.drawing import sheet  # noqa: PLC0415  (see above)
+
+        first = self.part_under(at)
+        if first is None or self.model.motion is not Motion.SPACE:
+            return () if first is None else (first,)
+        return sheet.parts_at(self.geometry, at.x, at.y) or (first,)
 
     def body_under(self, at: Pointer) -> str | None:
         """Return the id of the body under a pointer."""
@@ -352,10 +361,14 @@ class Hand(QObject):
     def double_click(self, event: QMouseEvent) -> None:
         """Ask for the values of a part that was clicked twice."""
         if self.ready and self.kind.name == "choose":
-            part = self.part_under(self._pointed(event))
+            at = self._pointed(event)
+            clicked = getattr(self.tool, "clicked", None)  # before a second click went on to what is behind
+            part = clicked if clicked in self.parts_under(at) else self.part_under(at)
             if part is not None:
                 self.choose((part,))
                 self.form_asked.emit((part,))
+        elif self.ready:  # two quick clicks of a tool are two clicks
+            self.press(event)
 
     def _after(self, do: Callable[[], None]) -> None:
         try:
@@ -532,7 +545,7 @@ class Hand(QObject):
             items += overlay.invitation_items(words, geometry.width, geometry.height, geometry.text_scale)
         if self._tool is not None:
             items += self._tool.items()
-            items += self._notes()
+            items += () if self.typing else self._notes()  # a field is shown in their place
         if self.cursor is not None:
             items += overlay.cursor_items(*self.cursor)
         if self.hint:

@@ -6,6 +6,7 @@ from typing import Any
 from modalview.errors import InputError
 from modalview.model.adding import add_link, add_support, end_at
 from modalview.model.parts import End, Model, Motion
+from modalview.ui.sketch import depth
 from modalview.ui.sketch.tool import Pointer, Tool
 
 # Links between two bodies, never to the ground.
@@ -38,6 +39,8 @@ class Join(Tool):
         self._to: Grip | None = None
         self._pressed: Pointer | None = None
         self._waits = False  # the first end was a click: the next click is the other end
+        # In space, of the end that is led elsewhere: its body, and its depth there.
+        self.kept: tuple[str | None, float] | None = None
 
     @property
     def busy(self) -> bool:
@@ -72,8 +75,12 @@ class Join(Tool):
                 self.cancel()
             return
         start, stop = self._from, self._to
+        away = self._along_sight()
         self.cancel()
-        self.hand.make(lambda model: self._made(model, start, stop), f"Draw {self._kind}")
+        if away:
+            self.hand.make(lambda model: self._made_away(model, start), f"Draw {self._kind}")
+        else:
+            self.hand.make(lambda model: self._made(model, start, stop), f"Draw {self._kind}")
 
     def cancel(self) -> bool:
         """Leave the link off."""
@@ -89,7 +96,30 @@ class Join(Tool):
         if body is None:  # drawn to a part from close by
             body = self.hand.body_under(Pointer(snapped.x, snapped.y))
         support = None if body is not None else self.hand.foot_under(at)
+        if depth.in_space(self.hand):
+            snapped = self._deep(body, support, snapped)
         return Grip(body, support, snapped)
+
+    def _deep(self, body: str | None, support: str | None, snapped: Any) -> Any:
+        """Return a place with its depth: of the support it is on, of the body, or of the first end."""
+        axis, first = depth.hidden(self.hand), self._from
+        if support is not None:
+            return depth.deep(self.hand, snapped, float(self.hand.middle_of(support)[axis]))
+        told = first is not None and (first.support is not None or first.at.on_point)
+        kept = float(first.at.world[axis]) if first is not None and (told or body is None) else None
+        if self.kept is not None and self.kept[0] in (body, None):
+            kept = self.kept[1]
+        if body is not None:
+            return depth.on_body(self.hand, body, snapped, kept)
+        return snapped if kept is None or snapped.on_point else depth.deep(self.hand, snapped, kept)
+
+    def _along_sight(self) -> bool:
+        """Whether the link goes straight away from the eye: both ends were put at one place on a body."""
+        start, stop = self._from, self._to
+        if start is None or stop is None or start.body is None or start.body != stop.body:
+            return False
+        near = max(abs(start.at.x - stop.at.x), abs(start.at.y - stop.at.y)) <= depth.ONE_PLACE
+        return near and self._waits and self.hand.geometry.view.straight
 
     def _why_not(self) -> str:
         start, stop = self._from, self._to
@@ -97,11 +127,31 @@ class Join(Tool):
             return "a link has two ends"
         if start.body is None and stop.body is None:
             return f"a {self._kind} needs a body that moves at one end"
+        if self._along_sight():
+            return self._why_not_away(start)
         if start.body is not None and start.body == stop.body:
             return f"both ends are on {self.hand.name_of(start.body)}; lead the {self._kind} to another part"
         if self._kind in OF_BODIES and (start.body is None or stop.body is None):
             return f"a {self._kind} joins two bodies; the ground is not one"
         return ""
+
+    def _why_not_away(self, start: Grip) -> str:
+        behind = depth.along_sight(self.hand, start.body, start.at)[1]
+        return f"a {self._kind} joins two bodies; the ground is not one" if self._needs_body(behind) else ""
+
+    def _needs_body(self, other: str | None) -> bool:
+        return self._kind in OF_BODIES and other is None
+
+    def _made_away(self, model: Model, start: Grip) -> tuple[Model, str]:
+        """Make a link along the line of sight."""
+        near, behind, far = depth.along_sight(self.hand, start.body, start.at)
+        one = end_at(model, start.body, self.hand.place(near))
+        if behind is not None:
+            other = end_at(model, behind, self.hand.place(far))
+        else:
+            model, support = add_support(model, self.hand.place(far))
+            other = End(support=support)
+        return add_link(model, self._kind, one, other, drag=self.hand.place(far - near))
 
     def _made(self, model: Model, start: Grip | None, stop: Grip | None) -> tuple[Model, str]:
         if start is None or stop is None:
@@ -127,6 +177,11 @@ class Join(Tool):
             return ()
         if self._from is not None and (why := self._why_not()):
             return (why,)
+        if self._along_sight():
+            behind = depth.along_sight(self.hand, self._from.body, self._from.at)[1]
+            end = "the ground" if behind is None else self.hand.name_of(behind)
+            ways = {2: "down", 1: "back", 0: "back"}
+            return (f"straight {ways[depth.hidden(self.hand)]} to {end}",)
         where = "ground" if self._to.body is None else self.hand.name_of(self._to.body)
         snapped = self._to.at.what
         return (where, snapped) if snapped not in ("", "grid", where) else (where,)

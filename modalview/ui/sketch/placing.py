@@ -4,6 +4,7 @@ from typing import Any
 
 from modalview.model.adding import add_body, add_support
 from modalview.model.parts import Motion
+from modalview.ui.sketch import depth
 from modalview.ui.sketch.tool import Number, Pointer, Tool
 from modalview.units import quantities as q
 
@@ -50,7 +51,10 @@ class PlaceBody(Tool):
         self.drag(at)
         if self._start is None:
             return
-        centre, size = self._box()
+        centre, seen = self._box()
+        size = (
+            seen if seen is None or not self._straight() else depth.model_size(self.hand.axes_shown(), seen)
+        )
         self.cancel()
         self.hand.make(
             lambda model: add_body(model, self._kind, self.hand.place(centre), size), f"Draw {self._kind}"
@@ -78,12 +82,26 @@ class PlaceBody(Tool):
             width, height = USUAL[self._kind]
             if self._kind == "disc" and self.hand.model.motion is not Motion.SHAFT_TRAIN:
                 width = height = ROUND
+            if self._straight() and depth.hidden(self.hand) == 0:
+                width *= depth.DEPTH
             size = (
                 self.hand.gridded(width / view.scale_x, 0),
                 self.hand.gridded(height / view.scale_y, 1),
             )
-        size = self._typed.get("width", size[0]), self._typed.get("height", size[1])
+        across, up = self._labels()
+        size = self._typed.get(across, size[0]), self._typed.get(up, size[1])
+        if self._straight():
+            size = depth.seen_size(self.hand.axes_shown(), *size)
         return float(f"{size[0]:.6g}"), float(f"{size[1]:.6g}")
+
+    def _straight(self) -> bool:
+        return bool(self.hand.geometry.view.straight)
+
+    def _labels(self) -> tuple[str, str]:
+        """Return what the two sides are called that are seen."""
+        if not self._straight():
+            return "width", "height"
+        return tuple({0: "width", 1: "depth", 2: "height"}[axis] for axis in self.hand.axes_shown())
 
     def _box(self) -> tuple[Any, tuple[float, float] | None]:
         """Return centre (world) and size in metres."""
@@ -97,14 +115,16 @@ class PlaceBody(Tool):
         down = 1.0 if self._at.y >= self._start.y else -1.0
         x = self._start.x + right * size[0] * view.scale_x / 2
         y = self._start.y + down * size[1] * view.scale_y / 2
-        return self.hand.world(x, y), size
+        return self.hand.world(x, y, self._start.world), size
 
     def numbers(self) -> tuple[Number, ...]:
         """Width and height while drawing."""
         if self._start is None or self._kind == "junction":
             return ()
         size = self._drawn_size()
-        return Number("width", size[0], q.LENGTH), Number("height", size[1], q.LENGTH)
+        across, up = self._labels()
+        numbers = (Number(across, size[0], q.LENGTH), Number(up, size[1], q.LENGTH))
+        return numbers[:1] if up == "depth" else numbers  # its depth follows from the width
 
     def notes(self) -> tuple[str, ...]:
         """Return what the pointer is drawn to."""

@@ -2,6 +2,7 @@
 
 from typing import Any
 
+from modalview.ui.sketch import depth
 from modalview.ui.sketch.tool import Pointer, Tool
 
 
@@ -17,6 +18,8 @@ class Push(Tool):
         """Show where it would act."""
         self._body = self.hand.body_under(at)
         self._at = self.hand.snap(at)
+        if self._body is not None:
+            self._at = depth.on_body(self.hand, self._body, self._at)
 
     def press(self, at: Pointer) -> None:
         """Wait for the release."""
