@@ -4,7 +4,7 @@ import numpy as np
 import pytest
 from conftest import body
 
-from modalview.drawing import outline
+from modalview.drawing import geometry, outline
 from modalview.drawing.sheet import sheet_geometry
 from modalview.model.parts import Model, Motion
 
@@ -16,6 +16,17 @@ def test_bodies_of_a_lattice_are_sized_the_same_whether_compared_or_by_levels(co
     compared = sheet_geometry(model, 900, 700).boxes
     monkeypatch.setattr(outline, "COMPARED", 0)
     assert sheet_geometry(model, 900, 700).boxes == pytest.approx(compared)
+
+
+def test_points_gathered_in_steps_are_the_same(monkeypatch):
+    bodies = tuple(body(f"b{n}", 1.5 * (n % 4), 1.2 * (n // 4)) for n in range(20))
+    model = Model(motion=Motion.PLANE, bodies=bodies)
+    whole = sheet_geometry(model, 900, 700)
+    monkeypatch.setattr(geometry, "JOINED_AT_ONCE", 3)
+    parts = sheet_geometry(model, 900, 700)
+    assert (parts.points.rest == whole.points.rest).all()
+    assert (parts.points.bodies == whole.points.bodies).all()
+    assert [len(faces) for faces in parts.faces] == [len(faces) for faces in whole.faces]
 
 
 def test_bodies_between_levels_stay_apart_from_their_neighbours(monkeypatch):
