@@ -9,10 +9,12 @@ import numpy as np
 
 from modalview.advice.doubt import Doubt
 from modalview.bounds.discs import Discs, Group
+from modalview.cli.speedtexts import run_up_document
 from modalview.eigen.modes import Modes
 from modalview.resonance.results import Check
 from modalview.study import FoundMode, MatrixOutlook, MatrixSolution, Outlook, Share, Solution
 from modalview.study.matrices import ABSENT
+from modalview.study.runup import passed_on_run_up
 
 RAD_PER_HZ = 2 * math.pi
 
@@ -21,7 +23,7 @@ def bounds_document(path: Path, outlook: Outlook | MatrixOutlook) -> dict[str, A
     """Return what is known before a solve."""
     bounds = outlook.bounds
     return {
-        **_head(path, outlook),
+        **head(path, outlook),
         "lowest_hz": _pair(bounds.lowest_hz),
         "highest_hz": _pair(bounds.highest_hz),
         "rigid_body_modes": bounds.rigid_body_modes,
@@ -81,7 +83,7 @@ def modes_document(path: Path, solution: Solution) -> dict[str, Any]:
     """Return the modes and why they can be believed."""
     raw = solution.raw
     return {
-        **_head(path, solution.outlook),
+        **head(path, solution.outlook),
         "modes": [_mode_document(mode, i, solution) for i, mode in enumerate(solution.modes)],
         "rigid_body_modes": raw.rigid_body_modes,
         "unstable_modes": raw.unstable,
@@ -134,10 +136,11 @@ def check_document(path: Path, solution: Solution | MatrixSolution) -> dict[str,
     """Return the verdicts."""
     outlook = solution.outlook
     return {
-        **_head(path, outlook),
+        **head(path, outlook),
         "verdict": outlook.verdict.value if outlook.verdict else None,
         "sentence": solution.sentence,
         "checks": [_check_document(check) for check in solution.checks],
+        "run_up": run_up_document(passed_on_run_up(solution)),
         "not_checked": list(outlook.not_checked),
         "notes": list(outlook.notes),
     }
@@ -167,7 +170,8 @@ def _check_document(check: Check) -> dict[str, Any]:
     }
 
 
-def _head(path: Path, outlook: Outlook | MatrixOutlook) -> dict[str, Any]:
+def head(path: Path, outlook: Outlook | MatrixOutlook) -> dict[str, Any]:
+    """Return what every document begins with."""
     if isinstance(outlook, MatrixOutlook):
         return matrices_head(path, outlook)
     model = outlook.request.model

@@ -2,7 +2,7 @@
 
 from collections.abc import Sequence
 from itertools import zip_longest
-from textwrap import wrap
+from textwrap import fill, wrap
 
 # No line is wider than a page of a report.
 WIDTH = 100
@@ -44,3 +44,8 @@ def _fitting(widths: list[int], right: frozenset[int]) -> list[int]:
 
 def _folded(cell: str, width: int) -> list[str]:
     return wrap(cell, width, break_on_hyphens=False, subsequent_indent="  ") if len(cell) > width else [cell]
+
+
+def wrapped(text: str, indent: str = "") -> str:
+    """Return text in lines no wider than a page, all but the first indented."""
+    return fill(text, WIDTH, subsequent_indent=indent, break_long_words=False, break_on_hyphens=False)

@@ -3,17 +3,18 @@
 from collections.abc import Iterable, Sequence
 from decimal import ROUND_CEILING, ROUND_FLOOR, Context, Decimal
 from pathlib import Path
-from textwrap import fill
 
 from modalview.advice.doubt import Doubt
 from modalview.bounds.before import to_hz
 from modalview.bounds.discs import Group
 from modalview.cli.cautions import CAUTION
 from modalview.cli.printing import one_line
-from modalview.cli.table import WIDTH, table
+from modalview.cli.speedtexts import run_up_text
+from modalview.cli.table import table, wrapped
 from modalview.resonance.results import Check, Drive
 from modalview.resonance.wording import band_text, hz_range, percent
 from modalview.study import FoundMode, MatrixOutlook, MatrixSolution, Outlook, Share, Solution
+from modalview.study.runup import passed_on_run_up
 from modalview.units.show import shown_digits, significant
 
 FORMULA = "separation = (natural frequency - excitation frequency) / excitation frequency"
@@ -25,7 +26,7 @@ def bounds_text(outlook: Outlook | MatrixOutlook) -> str:
     """Return what is known before a solve."""
     bounds = outlook.bounds
     parts = [
-        _title(outlook),
+        title_line(outlook),
         table(
             [
                 ["lowest elastic mode", _span(bounds.lowest_hz)],
@@ -42,17 +43,15 @@ def bounds_text(outlook: Outlook | MatrixOutlook) -> str:
         ]
         parts.append(table([head, *rows], right=frozenset({2, 3, 4})))
     parts += [_separated(bounds.separated)] if bounds.separated else []
-    parts += [_wrapped(outlook.sentence), wrapped_lines(bounds.notes)]
+    parts += [wrapped(outlook.sentence), wrapped_lines(bounds.notes)]
     if isinstance(outlook, Outlook) and outlook.doubts:
         parts.append(doubts_text(outlook.doubts))
-    return "\n\n".join(parts + _tail(outlook))
+    return "\n\n".join(parts + tail(outlook))
 
 
 def doubts_text(doubts: Sequence[Doubt]) -> str:
     """Return what is doubted about the model, each with what it would mean."""
-    lines = [
-        _wrapped(f"  {one.text}", "    ") + "\n" + _wrapped(f"    {one.effect}", "    ") for one in doubts
-    ]
+    lines = [wrapped(f"  {one.text}", "    ") + "\n" + wrapped(f"    {one.effect}", "    ") for one in doubts]
     return "Doubts:\n" + "\n".join(lines)
 
 
@@ -72,7 +71,7 @@ def modes_text(solution: Solution | MatrixSolution, more: str = "") -> str:
     """Return the modes as a table, with the evidence and what more there is to tell."""
     head = ["mode", "frequency", "over tolerance", "name"]
     rows = [[str(mode.number), frequency_text(mode), range_text(mode), mode.name] for mode in solution.modes]
-    parts = [_title(solution.outlook), table([head, *rows], right=frozenset({0, 1}))]
+    parts = [title_line(solution.outlook), table([head, *rows], right=frozenset({0, 1}))]
     parts += [
         f"{head}\n" + "\n".join(_listed(f"{number:>4}  ", shares) for number, shares in found)
         for head, found in (
@@ -85,25 +84,27 @@ def modes_text(solution: Solution | MatrixSolution, more: str = "") -> str:
         if found
     ]
     parts += [text for text in (wrapped_lines(solution.evidence), more) if text]
-    return "\n\n".join(parts + _tail(solution.outlook))
+    return "\n\n".join(parts + tail(solution.outlook))
 
 
 def check_text(path: Path, solution: Solution | MatrixSolution) -> str:
     """Return the verdicts, what decides them, and what was not checked."""
     outlook = solution.outlook
     verdict = outlook.verdict.value if outlook.verdict else "nothing to check"
-    parts = [f"{one_line(str(path))}: {verdict.upper()}", _wrapped(solution.sentence)]
+    parts = [f"{one_line(str(path))}: {verdict.upper()}", wrapped(solution.sentence)]
     if solution.checks:
         head = ["check", "excitation", "verdict", "nearest mode", "separation", "worst"]
         rows = [_check_row(check, solution.modes, _no_nearest(solution)) for check in solution.checks]
         parts.append(table([head, *rows], right=frozenset({4, 5})))
         parts.append(f"{FORMULA}\n{WORST}")
-        parts.append("\n".join(_wrapped(f"{c.band.label}: {c.reason}.", "  ") for c in solution.checks))
-        driven = [_wrapped(f"{c.band.label}: {drive_text(c)}", "  ") for c in solution.checks if c.drives]
+        parts.append("\n".join(wrapped(f"{c.band.label}: {c.reason}.", "  ") for c in solution.checks))
+        driven = [wrapped(f"{c.band.label}: {drive_text(c)}", "  ") for c in solution.checks if c.drives]
         if driven:
             parts.append("What each excitation drives:\n" + "\n".join(driven))
-    parts.append("Not checked:\n" + "\n".join(_wrapped(f"  {line}", "    ") for line in outlook.not_checked))
-    return "\n\n".join(parts + _tail(outlook))
+    passed = run_up_text(passed_on_run_up(solution)) if solution.checks else ""
+    parts += [passed] if passed else []
+    parts.append("Not checked:\n" + "\n".join(wrapped(f"  {line}", "    ") for line in outlook.not_checked))
+    return "\n\n".join(parts + tail(outlook))
 
 
 def _no_nearest(solution: Solution | MatrixSolution) -> str:
@@ -139,27 +140,25 @@ def _share(share: float) -> str:
     return f"{share:.2g}" if share >= 1e-6 else "0"
 
 
-def _title(outlook: Outlook | MatrixOutlook) -> str:
+def title_line(outlook: Outlook | MatrixOutlook) -> str:
+    """Return what a result is of."""
     n = outlook.pencil.n if isinstance(outlook, MatrixOutlook) else outlook.assembly.n
     freedoms = f"{n} degree{'' if n == 1 else 's'} of freedom"
     if isinstance(outlook, MatrixOutlook):
-        return _wrapped(f"{outlook.request.pair.words} ({freedoms})")
+        return wrapped(f"{outlook.request.pair.words} ({freedoms})")
     model = outlook.request.model
-    return _wrapped(f"{model.title or 'untitled'} ({model.motion}, {freedoms})")
+    return wrapped(f"{model.title or 'untitled'} ({model.motion}, {freedoms})")
 
 
-def _tail(outlook: Outlook | MatrixOutlook) -> list[str]:
-    notes = [_wrapped(f"Note: {note}.", "  ") for note in outlook.notes]
+def tail(outlook: Outlook | MatrixOutlook) -> list[str]:
+    """Return what stands under a result: notes and the caution."""
+    notes = [wrapped(f"Note: {note}.", "  ") for note in outlook.notes]
     return ["\n".join([*notes, CAUTION])]
-
-
-def _wrapped(text: str, indent: str = "") -> str:
-    return fill(text, WIDTH, subsequent_indent=indent, break_long_words=False, break_on_hyphens=False)
 
 
 def wrapped_lines(texts: Iterable[str]) -> str:
     """Return texts one below the other, none wider than a page."""
-    return "\n".join(_wrapped(text, "  ") for text in texts)
+    return "\n".join(wrapped(text, "  ") for text in texts)
 
 
 def _span(span: tuple[float, float] | None) -> str:
@@ -200,4 +199,4 @@ def _energies(found: Iterable[tuple[int, Sequence[Share]]]) -> list[tuple[int, S
 def _listed(head: str, shares: Sequence[Share]) -> str:
     leading = [share for share in shares[:MOST_SHARES] if share.fraction >= 0.005]
     text = "; ".join(f"{share.label} {100 * share.fraction:.0f} %" for share in leading)
-    return _wrapped(head + text, " " * len(head))
+    return wrapped(head + text, " " * len(head))

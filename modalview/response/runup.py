@@ -51,6 +51,8 @@ class Passage:
         Machine speed at which the order is on it.
     speeds : pair of float, rad/s
         The same over all tolerances; may reach past the lowest speed.
+    at_nominal : bool
+        Whether it is passed at nominal values; else only at some within tolerance.
     damping_ratio : float or None
         Of the mode; None where nothing damps it or no acceleration is known.
     seconds, cycles : float or None
@@ -64,6 +66,7 @@ class Passage:
     frequency: float
     speed: float
     speeds: tuple[float, float]
+    at_nominal: bool
     damping_ratio: float | None = None
     seconds: float | None = None
     cycles: float | None = None
@@ -103,14 +106,16 @@ def passages(
         By order as given, then by speed.
     """
     return tuple(
-        _passage(order, mode, ratios[i] if ratios is not None else 0.0, acceleration)
+        _passage(order, mode, lowest, ratios[i] if ratios is not None else 0.0, acceleration)
         for order in orders
         for i, mode in enumerate(modes)
         if mode.low < order.rate * lowest
     )
 
 
-def _passage(order: Swept, mode: ModeSpan, ratio: float, acceleration: float | None) -> Passage:
+def _passage(
+    order: Swept, mode: ModeSpan, lowest: float, ratio: float, acceleration: float | None
+) -> Passage:
     known = acceleration is not None and ratio > 0
     seconds = (
         half_power_seconds(mode.nominal, ratio, order.rate * acceleration) if known and acceleration else None
@@ -122,6 +127,7 @@ def _passage(order: Swept, mode: ModeSpan, ratio: float, acceleration: float | N
         frequency=mode.nominal,
         speed=mode.nominal / order.rate,
         speeds=(mode.low / order.rate, mode.high / order.rate),
+        at_nominal=mode.nominal < order.rate * lowest,
         damping_ratio=ratio if ratio > 0 else None,
         seconds=seconds,
         cycles=None if seconds is None else seconds * mode.nominal / (2 * math.pi),

@@ -10,6 +10,8 @@ from modalview.response.isolators import AtRest, at_rest
 from modalview.response.weight import GRAVITY
 from modalview.study.results import Request
 
+# A balance is not told closer than a double can.
+LEAST = 1e-16
 LEFT_OUT = (
     "Not covered: the stability of a high centre of gravity (the weight's own moment once it has tilted), "
     "mounts that stiffen or bottom out, and forces of pipes, ducts and drives."
@@ -34,6 +36,8 @@ class MountsAtRest:
         How closely the loads balance the weight.
     notes : tuple of str
         What was taken for granted, and what is not covered.
+    coordinates : int
+        Independent coordinates of the model.
     seconds : float
     """
 
@@ -42,6 +46,7 @@ class MountsAtRest:
     sentence: str
     evidence: tuple[str, ...]
     notes: tuple[str, ...]
+    coordinates: int
     seconds: float
 
     @property
@@ -75,6 +80,7 @@ def mounts_at_rest(request: Request) -> MountsAtRest:
         sentence=_sentence(found),
         evidence=_evidence(found),
         notes=(*_taken(model), *assembly.notes, SHARED, LEFT_OUT),
+        coordinates=assembly.n,
         seconds=perf_counter() - start,
     )
 
@@ -103,10 +109,10 @@ def _sentence(found: AtRest) -> str:
 
 
 def _evidence(found: AtRest) -> tuple[str, ...]:
-    missing = abs(found.weight - found.on_ground - found.held) / found.weight if found.weight else 0.0
+    missing = abs(found.weight - found.on_ground - found.held) / (found.weight or 1.0)
     return (
-        f"loads at ground and weight balance to {missing:.0e} of the weight",
-        f"forces balance at every part to {found.unbalanced:.0e} of the weight",
+        f"loads at ground and weight balance to {max(missing, LEAST):.0e} of the weight",
+        f"forces balance at every part to {max(found.unbalanced, LEAST):.0e} of the weight",
     )
 
 

@@ -10,6 +10,7 @@ from modalview.response.runup import Passage, Swept, mode_ratios, passages
 from modalview.study.campbell import spans
 from modalview.study.completed import ELASTIC
 from modalview.study.damped import has_loss_factors, modal_ratio
+from modalview.study.matrices import MatrixOutlook, MatrixSolution
 from modalview.study.results import Solution
 
 QUASI_STEADY = (
@@ -18,7 +19,7 @@ QUASI_STEADY = (
 )
 
 
-def passed_on_run_up(solution: Solution) -> tuple[Passage, ...] | None:
+def passed_on_run_up(solution: Solution | MatrixSolution) -> tuple[Passage, ...] | None:
     """Return the modes that each order passes from standstill to the lowest speed of its machine.
 
     Returns
@@ -27,20 +28,24 @@ def passed_on_run_up(solution: Solution) -> tuple[Passage, ...] | None:
         By machine and order, as in the file; None where not all modes are known. A fixed frequency passes
         none.
     """
-    if solution.outlook.assembly.pencil().modes > LARGEST:
+    outlook = solution.outlook
+    pencil = outlook.pencil if isinstance(outlook, MatrixOutlook) else outlook.assembly.pencil()
+    if pencil.modes > LARGEST:
         return None
-    machines = solution.outlook.request.model.machines
+    machines = outlook.request.model.machines
     return tuple(one for machine in machines for one in _passed(solution, machine))
 
 
-def _passed(solution: Solution, machine: Machine) -> tuple[Passage, ...]:
+def _passed(solution: Solution | MatrixSolution, machine: Machine) -> tuple[Passage, ...]:
     if machine.speed is None:
         return ()
     lowest = machine.speed.from_.si if isinstance(machine.speed, SpeedRange) else machine.speed.si
     lines = order_lines(solution.outlook.request.model, machine)
     orders = [Swept(line.check, line.label, line.rate) for line in lines if line.order is not None]
     acceleration = machine.run_up.acceleration.si if machine.run_up else None
-    ratios = damping_ratios(solution) if acceleration is not None else None
+    ratios = None
+    if isinstance(solution, Solution) and acceleration is not None:
+        ratios = damping_ratios(solution)
     return passages(orders, spans(solution.modes), lowest, ratios, acceleration)
 
 

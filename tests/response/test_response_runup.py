@@ -21,6 +21,7 @@ def test_what_lies_below_the_lowest_speed_is_passed():
     found = passages(ORDERS, MODES, 1500 * RPM)
     told = [(one.check, one.mode, round(one.speed / RPM, 9)) for one in found]
     assert told == [("m/1x", 1, 600), ("m/2x", 1, 300), ("m/2x", 2, 900)]
+    assert all(one.at_nominal for one in found)
     assert [edge / RPM for edge in found[0].speeds] == pytest.approx([540, 660])
     assert {(one.seconds, one.cycles, one.quasi_steady) for one in found} == {(None, None, None)}
 
@@ -28,6 +29,7 @@ def test_what_lies_below_the_lowest_speed_is_passed():
 def test_a_mode_passed_only_at_some_values_is_listed():
     (found,) = passages(ORDERS[:1], MODES[1:2], 1700 * RPM)
     assert found.speeds[0] < 1700 * RPM < found.speed
+    assert not found.at_nominal
     assert passages(ORDERS[:1], MODES[1:2], 1619 * RPM) == ()
 
 
