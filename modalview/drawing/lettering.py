@@ -40,6 +40,7 @@ LARGE_TEXT = 1.25  # times the size: texts larger than this fall away rather tha
 LEADER_MARKS = 24  # places along a leader at which it is looked at
 ALIKE_TRIES = 6  # of links that share their text, so many are tried with a leader
 APART = 40.0  # pixels: a text further from its link has a leader
+NEAR_RING = 18.0  # the same from a link seen end-on, a mere ring
 SHORT = 110.0  # pixels: shorter links may be written at the side of the body they carry
 
 
@@ -180,7 +181,8 @@ def _by_body(
     x1, y1, x2, y2 = geometry.fronts[number].tolist()
     within = (x1 + 3, y1 + 1, x2 - x1 - 6, y2 - y1 - 2)
     if _fits_in(geometry, board, number, lines):
-        placed = inner.place(lines, _inside(within, board.size(lines)), within=within)
+        spots = _uncovered(geometry, number, _inside(within, board.size(lines)), board.size(lines))
+        placed = inner.place(lines, spots, within=within)
         if placed:
             return placed
     if geometry.train is not None:
@@ -192,6 +194,21 @@ def _by_body(
         return []
     about = round_about(_rectangle(geometry.boxes[number]), 12.0)
     return board.place(lines, about, sway=_sway(geometry), owner=_owner(geometry.boxes, number))
+
+
+def _uncovered(
+    geometry: SheetGeometry, number: int, spots: list[Spot], size: tuple[float, float]
+) -> list[Spot]:
+    """Keep the spots on a body that no other one stands before, where a space model is seen straight."""
+    if not geometry.view.straight:
+        return spots
+    nearness = geometry.places.centres @ geometry.view.towards
+    before = geometry.boxes[(nearness >= nearness[number]) & (np.arange(len(nearness)) != number)]
+    x = np.array([spot.x + (spot.right - 1) / 2 * size[0] for spot in spots])[:, None]
+    y = np.array([spot.y + (spot.down - 1) / 2 * size[1] for spot in spots])[:, None]
+    x1, y1, x2, y2 = before.T
+    covered = ((x < x2) & (x + size[0] > x1) & (y < y2) & (y + size[1] > y1)).any(axis=1)
+    return [spot for spot, hidden in zip(spots, covered.tolist(), strict=True) if not hidden]
 
 
 def _owner(boxes: Floats, number: int) -> Owner:
@@ -288,7 +305,9 @@ def _by_push(
     within = _rectangle(geometry.fronts[push.body])
     placed: list[Text] = []
     if push.on_body:
-        placed = inner.place(lines, round_about((x1, y1, x2 - x1, y2 - y1), 4.0), within=within)
+        about = round_about((x1, y1, x2 - x1, y2 - y1), 4.0)
+        about = _uncovered(geometry, push.body, about, board.size(lines))
+        placed = inner.place(lines, about, within=within)
     spots = [*push.spots, *ring_about(x1, y1)] if room.far else list(push.spots)
     placed = placed or board.place(lines, spots, sway=room.sway, owner=room.owner)
     if placed or not room.far:
@@ -369,7 +388,7 @@ def _placed_beside(
     if placed:
         x1, y1, x2, y2 = extent(placed, geometry.text_scale)
         foot = np.clip(middle, (x1 - 3, y1), (x2 + 3, y2))
-        if np.hypot(*(foot - middle)) > APART:
+        if np.hypot(*(foot - middle)) > (NEAR_RING if geometry.links_end_on[number] else APART):
             letters.leaders.append((*foot.tolist(), *middle.tolist()))
     return bool(placed)
 

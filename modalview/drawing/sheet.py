@@ -78,7 +78,9 @@ def sheet_drawing(
     """Return the sheet at rest, with the selected part framed."""
     items = paper_items(geometry, title) + ground_items(geometry) + axis_items(geometry)
     items += train_items(geometry)
-    items += leader_items(geometry) + part_items(geometry, geometry.points.rest)
+    parts, leaders = part_items(geometry, geometry.points.rest), leader_items(geometry)
+    # Seen straight, what is written belongs to links before or behind bodies: leaders end on top of them.
+    items += parts + leaders if geometry.view.straight else leaders + parts
     items += (*geometry.labels, *label_items(geometry), *_frame(geometry, selected))
     return sheet_of(items, geometry.width, geometry.height, geometry.text_scale)
 
