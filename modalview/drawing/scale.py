@@ -366,29 +366,25 @@ def _modes(frame: _Frame, modes: tuple[ScaleMode, ...]) -> tuple[Item, ...]:
 def _foretold(frame: _Frame, modes: tuple[ScaleMode, ...]) -> tuple[Item, ...]:
     """Draw modes that are foretold, not found: pale and dashed, their numbers beside."""
     axis = frame.axis
-    shown = [mode for mode in modes if axis.low_hz <= mode.hz <= axis.high_hz]
+    shown = sorted((m for m in modes if axis.low_hz <= m.hz <= axis.high_hz), key=lambda mode: -mode.hz)
     if not shown:
         return ()
     room = 8.0 + text_width(max((str(mode.number) for mode in shown), key=len), Size.SMALL)
     left, right = frame.x(_MODE[0]), min(frame.x(_MODE[1]), frame.right - room * frame.text_scale)
     ticks = axis.ys_of(np.array([mode.hz for mode in shown]))
     across = np.stack([0 * ticks + left, ticks, 0 * ticks + right, ticks], axis=1)
-    places = spread(ticks.tolist(), 14.5 * frame.text_scale, axis.top, axis.bottom)
-    numbers = (
-        Text(right + 5, y, str(mode.number), Role.MUTED, Size.SMALL, Anchor.LEFT)
-        for mode, y in zip(shown, places, strict=True)
-    )
+    numbers = _numbers(frame, shown, right + 5, Role.MUTED)
     return Lines(dashed(across, 4.0, 3.0), Role.MUTED, 1.6), *numbers
 
 
-def _numbers(frame: _Frame, shown: list[ScaleMode], x: float) -> tuple[Item, ...]:
+def _numbers(frame: _Frame, shown: list[ScaleMode], x: float, role: Role | None = None) -> tuple[Item, ...]:
     """Write the modes' numbers beside their ticks; of too many, every second, third, ..."""
     axis, apart = frame.axis, 14.5 * frame.text_scale
     every = max(1, int(np.ceil(len(shown) * apart / (axis.bottom - axis.top))))
     written = shown[::every]
     places = spread([axis.y_of(mode.hz) for mode in written], apart, axis.top, axis.bottom)
     return tuple(
-        Text(x, y, str(mode.number), _mode_role(mode), Size.SMALL, Anchor.LEFT, bold=True)
+        Text(x, y, str(mode.number), role or _mode_role(mode), Size.SMALL, Anchor.LEFT, bold=role is None)
         for mode, y in zip(written, places, strict=True)
     )
 

@@ -182,6 +182,8 @@ class ModeCard(QStyledItemDelegate):
         words = range_text(mode) if now.current else "out of date"
         if now.foretold is not None:
             words = f"was {frequency_text(mode)}"
+            if QFontMetricsF(small).horizontalAdvance(words) > room.width():
+                words = ""  # it stands in the tool tip
         self._write(painter, room, words, self._theme.quiet, small, _RIGHT)
         lines = 1 if painter.fontMetrics().horizontalAdvance(mode.name) <= inner.width() else 2
         name = QRectF(inner.left(), inner.top() + line + 1, inner.width(), lines * line)

@@ -210,7 +210,7 @@ def evidence(analysis: Analysis) -> str:
         return ""
     if not analysis.solution_current:
         if analysis.foretold:
-            return "Out of date: modes of the model before the last edit, their frequencies foretold"
+            return "Out of date: of before the last edit; frequencies foretold"
         return "Out of date: these modes are of the model before the last edit"
     return " · ".join(analysis.solution.evidence[:2])
 

@@ -117,7 +117,7 @@ class PartTableModel(QAbstractTableModel):
         return True
 
     def reason_at(self, index: _Index) -> str:
-        """Return why an entry of a line is refused, with what was typed; "" where none is."""
+        """Return which entry of a line is refused, and why; "" where none is."""
         if not index.isValid():
             return ""
         row = self.rows[index.row()]
@@ -125,7 +125,7 @@ class PartTableModel(QAbstractTableModel):
             refusal = self._refusals.get((row.address, column))
             if refusal:
                 what = "tolerance" if column == TOLERANCE else row.what
-                return f"{row.part}, {what}: \u201c{refusal[0]}\u201d is not used. {refusal[1]}"
+                return f"{row.part}, {what}: not used. {refusal[1]}"
         return ""
 
     def _refusals_changed(self, first: int, last: int) -> None:

@@ -229,3 +229,11 @@ def test_foretold_modes_are_dashed_pale_and_named_so(demo_model: Model):
     assert len(more) == len(less) + 1
     assert "foretold" in [text.text for text in texts(items)]
     assert_apart(items, (320, 760))
+
+
+def test_foretold_modes_are_numbered_at_their_ticks():
+    found = tuple(ScaleMode(number, hz, hz, hz) for number, hz in enumerate((20.0, 45.0, 110.0), start=1))
+    scale = scale_drawing(ScaleContent(bands=(band("1×", 50.0),), foretold=found), 320, 760)
+    numbers = {one.text: one.y for one in texts(scale.drawing.items) if one.text in ("1", "2", "3")}
+    for mode in found:
+        assert numbers[str(mode.number)] == pytest.approx(scale.axis.y_of(mode.hz), abs=1.0)
