@@ -58,12 +58,16 @@ class ModeRow(QListView):
             self.setCurrentIndex(self.modes.index(row))
 
     def show_found(self, solution: Any) -> None:
-        """Show the modes of a model, keeping the place of the chosen one; None shows none."""
-        row = self.currentIndex().row()
+        """Show the modes of a model; None shows none.
+
+        The place of the chosen one is kept while there are as many: another part shifts them all.
+        """
+        row, number = self.currentIndex().row(), self.modes.rowCount()
         self.card.set_model(None if solution is None else _model_of(solution))
         silent = self.blockSignals(True)  # not every step of the exchange is a choice
         self.modes.show_solution(solution, current=True)
-        self.choose(min(row, self.modes.rowCount() - 1) if row >= 0 else self.modes.worst_row())
+        kept = row >= 0 and number == self.modes.rowCount()
+        self.choose(row if kept else self.modes.worst_row())
         self.blockSignals(silent)
         self.fit_cards()
 

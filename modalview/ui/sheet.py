@@ -117,6 +117,11 @@ class Sheet(QWidget):
             self._still = still
             self._pose()
 
+    @property
+    def still(self) -> bool:
+        """Whether no mode moves because somebody draws."""
+        return self._still
+
     def show_title(self, title: Any) -> None:
         """Fill the title block (drawing.furniture.TitleLines)."""
         if title != self._title:

@@ -66,6 +66,11 @@ class Pen:
         QTest.keyClicks(QApplication.focusWidget(), text)
         QApplication.processEvents()
 
+    def over_number(self, text):
+        """Type over the number that has the keyboard, without Enter."""
+        QApplication.focusWidget().selectAll()
+        self.type_on(text)
+
     def key_on(self, widget, key):
         """Press a key on a widget."""
         QTest.keyClick(widget, key)

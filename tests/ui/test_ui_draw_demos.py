@@ -217,6 +217,7 @@ def test_the_cooling_water_pump_by_mouse(person, tmp_path, qtbot):
     person.push(part("motor"), "2x", "", "", "misalignment")
     person.push(part("pump"), "7x", "", "", "vane pass")
     same(saved(person, tmp_path, qtbot), "1-cooling-water-pump/as-built")
+    assert person.window.modes.row.chosen().number == 1  # the one in the band, not one of a half-drawn model
 
 
 @pytest.mark.slow

@@ -1,5 +1,6 @@
 """Drawing on the sheet: each tool, moving, sizing, choosing, numbers typed over, undo of all of it."""
 
+import numpy as np
 import pytest
 from conftest import FAN, settle
 from pen import Pen
@@ -7,6 +8,7 @@ from PySide6.QtCore import QPoint, Qt
 from PySide6.QtGui import QGuiApplication
 from PySide6.QtWidgets import QApplication
 
+from modalview.drawing.primitives import Lines
 from modalview.model.parts import Model, Motion
 from modalview.model.values import STARTING
 
@@ -92,6 +94,37 @@ def test_numbers_typed_over_a_drag_hold_whatever_the_pointer_does(sketch):
     sketch.key(Qt.Key.Key_Return)
     (body,) = model(sketch).bodies
     assert body.drawn.width.text == "0.85 m"
+    sketch.type("620 kg", "", "motor")  # the keyboard has gone on to the values of what was made
+    assert model(sketch).bodies[0].name == "motor"
+
+
+@pytest.mark.parametrize("stop", [(2.6, 1.9), (-1.5, 1.9), (2.6, -1.2), (-1.5, -1.2)])
+def test_the_fields_of_numbers_stand_beside_what_is_drawn_not_over_it(sketch, stop):
+    sketch.tool("M")
+    sketch.drag(sketch.at(1.0, 0.0), sketch.at(*stop), let_go=False)
+    sketch.key(Qt.Key.Key_8)
+    entry, outline = sketch.window.sketching.numbers, sketch.window.sketching.hand.dragged_over()
+    for text in ("8 kg", "80 cm"):  # refused: it grows by the reason
+        sketch.over_number(text)
+        assert sketch.sheet.rect().contains(entry.geometry())
+        assert not entry.geometry().intersects(outline)
+    sketch.key(Qt.Key.Key_Escape)
+
+
+def test_the_link_is_seen_while_its_end_is_led_and_no_mode_moves_meanwhile(pump, qtbot):
+    pen = Pen(pump, qtbot)
+    pump.activateWindow()
+    pump.sketching.hand.choose(("k2",))
+    ends = pen.laid_out().link_ends[1]
+    start = QPoint(*(round(one) for one in ends[0]))
+    pen.drag(start, pen.part("motor", 0.8, 0.8), let_go=False)
+    assert pump.sheet.still
+    drawn = [item for item in pump.sketching.hand.items() if isinstance(item, Lines)]
+    near = [np.abs(item.segments - np.tile(ends[1], 2)).min() for item in drawn]
+    assert min(near) < 1e-6  # from the other end
+    pen.key(Qt.Key.Key_Escape)
+    pen.let_go(start)
+    assert not pump.sheet.still
 
 
 def two_masses(pen):

@@ -7,7 +7,7 @@ from modalview.drawing.snap import Wish
 from modalview.model.moving import moved, reattached, resized
 from modalview.model.parts import Model
 from modalview.ui.sketch import depth
-from modalview.ui.sketch.joining import Join
+from modalview.ui.sketch.joining import Grip, Join
 from modalview.ui.sketch.tool import Number, Pointer, Tool
 from modalview.ui.sketch.trial import Trial
 from modalview.units import quantities as q
@@ -290,10 +290,14 @@ class Lead(Tool):
         self._kind = next(one.kind for one in hand.model.links if one.id == link)
         self._join = Join(hand, self._kind)
         self._join.kept = depth.of_end(hand, link, side)
+        number = next(n for n, one in enumerate(hand.geometry.model.links) if one.id == link)
+        self._other: list[float] = hand.geometry.link_ends[number, 1 if side == "from" else 0].tolist()
+        self._at: Grip | None = None
 
     def drag(self, at: Pointer) -> None:
         """Show what the end would be on."""
         self._join.hover(at)
+        self._at = self._join.grip(at)
 
     def release(self, at: Pointer) -> None:
         """Make it so."""
@@ -311,5 +315,11 @@ class Lead(Tool):
         return self._join.notes()
 
     def items(self) -> tuple[Any, ...]:
-        """Return the part and place it would be joined to."""
-        return self._join.items()
+        """Return the link as it would be, and the part and place it would be joined to."""
+        from modalview.drawing import overlay  # noqa: PLC0415  (numpy comes after the first paint)
+
+        if self._at is None:
+            return ()
+        start, stop = (self._other[0], self._other[1]), (self._at.at.x, self._at.at.y)
+        on_ground = self._at.body is None
+        return *self._join.items(), *overlay.link_items(self._kind, start, stop, on_ground=on_ground)

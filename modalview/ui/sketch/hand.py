@@ -3,7 +3,7 @@
 from collections.abc import Callable
 from typing import Any
 
-from PySide6.QtCore import QObject, QRect, Qt, Signal
+from PySide6.QtCore import QObject, QRect, QSize, Qt, Signal
 from PySide6.QtGui import QKeyEvent, QMouseEvent
 
 from modalview.errors import InputError
@@ -40,7 +40,7 @@ class Hand(QObject):
     begun = Signal()  # the mouse goes to work, or another tool was taken in hand
     told = Signal(str)  # a hint, or why something was not done
     numbers_changed = Signal()
-    number_begun = Signal(str, float, float)  # a first character was typed during a drag, at a place
+    number_begun = Signal(str)  # a first character was typed during a drag
 
     def __init__(self, document: Document, sheet: Any) -> None:
         super().__init__(sheet)
@@ -54,7 +54,7 @@ class Hand(QObject):
         self.locked = False  # the tool stays in hand after use
         self.typing = False  # numbers are typed over: the pointer is not followed
         self._down = False
-        self._pointer = Pointer(0.0, 0.0)
+        self._pressed = self._pointer = Pointer(0.0, 0.0)
         self.cursor: tuple[float, float] | None = None  # cross moved by the arrow keys
 
     # What tools ask
@@ -318,6 +318,15 @@ class Hand(QObject):
         self.numbers_changed.emit()
         self._sheet.update()
 
+    def dragged_over(self) -> QRect:
+        """Return the rectangle between press and pointer, and what is chosen, on the sheet."""
+        one, other = self._pressed, self._pointer
+        over = QRect(round(min(one.x, other.x)), round(min(one.y, other.y)), 1, 1)
+        over.setSize(QSize(round(abs(one.x - other.x)) + 1, round(abs(one.y - other.y)) + 1))
+        return (
+            over.united(self.rectangle(self.chosen)) if self.kind.name == "choose" and self.chosen else over
+        )
+
     # The mouse
 
     def _pointed(self, event: QMouseEvent) -> Pointer:
@@ -337,7 +346,8 @@ class Hand(QObject):
             self.begun.emit()
             if self.kind.name == "choose":
                 self.hint = ""
-            self._pointer, self._down, self.cursor = self._pointed(event), True, None
+            self._pressed = self._pointer = self._pointed(event)
+            self._down, self.cursor = True, None
             self._after(lambda: self.tool.press(self._pointer))
 
     def move(self, event: QMouseEvent) -> None:
@@ -410,7 +420,7 @@ class Hand(QObject):
     def _letter(self, text: str, *, keep: bool) -> bool:
         if text and text in _NUMBER_BEGINS and self.numbers():
             self.typing = True
-            self.number_begun.emit(text, self._pointer.x, self._pointer.y)
+            self.number_begun.emit(text)
             return True
         tool = BY_KEY.get(text.upper())
         if tool is None or self.model.motion not in tool.motions:

@@ -6,13 +6,14 @@ from PySide6.QtWidgets import QFrame, QGridLayout, QLabel, QLineEdit, QWidget
 
 from modalview.errors import InputError
 from modalview.model.tolerance_text import typed_entry
+from modalview.ui.sketch.floating import place_beside
 from modalview.ui.sketch.hand import Hand
 from modalview.ui.sketch.tool import Number
 from modalview.units.show import show
 
 # A bare number is in this unit of the system shown.
 UNITS = {"SI": "m", "mm-t": "mm", "inch-pound": "in"}
-_AWAY = 18
+_EDGE = 4
 
 
 class NumberEntry(QFrame):
@@ -36,7 +37,7 @@ class NumberEntry(QFrame):
         hand.numbers_changed.connect(self._on_numbers_changed)
         self.hide()
 
-    def begin(self, first: str, x: float, y: float) -> bool:
+    def begin(self, first: str) -> bool:
         """Open with a first character typed; tell whether there are any numbers to type."""
         numbers = self._hand.numbers()
         if not numbers:
@@ -46,13 +47,8 @@ class NumberEntry(QFrame):
             self._add(row, number)
         self._grid.addWidget(self.reason, len(numbers), 0, 1, 3)
         self.reason.hide()
-        self.adjustSize()
-        room = self.parentWidget().rect()
-        self.move(
-            min(round(x) + _AWAY, max(room.width() - self.width() - 4, 4)),
-            min(round(y) + _AWAY, max(room.height() - self.height() - 4, 4)),
-        )
         self.show()
+        self._place()
         self.raise_()
         line = next(iter(self.fields.values()))
         line.setText(first)
@@ -100,10 +96,16 @@ class NumberEntry(QFrame):
         self._refuse("")
         self._hand.put_number(name, si)
 
+    def _place(self) -> None:
+        """Stand beside what is being drawn."""
+        room = self.parentWidget().rect().adjusted(_EDGE, _EDGE, -_EDGE, -_EDGE)
+        self.adjustSize()
+        self.setGeometry(place_beside(self.size(), self._hand.dragged_over(), room))
+
     def _refuse(self, why: str) -> None:
         self.reason.setText(why)
         self.reason.setVisible(bool(why))
-        self.adjustSize()
+        self._place()
 
     def _on_numbers_changed(self) -> None:
         if self.isVisible() and not self._hand.numbers():
@@ -120,9 +122,8 @@ class NumberEntry(QFrame):
         if event.type() == QEvent.Type.KeyPress and isinstance(event, QKeyEvent):
             if event.key() in (Qt.Key.Key_Return, Qt.Key.Key_Enter):
                 if self.reason.isHidden():
-                    self._hand.typing = False
+                    self.close_entry()  # first: what is made asks for its values, and takes the keyboard
                     self._hand.settle()
-                    self.close_entry()
                 return True
             if event.key() == Qt.Key.Key_Escape:
                 self._hand.leave_off()

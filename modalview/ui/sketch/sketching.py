@@ -36,6 +36,7 @@ class Sketching(QObject):
         hand.tool_changed.connect(self._on_tool_changed)
         hand.told.connect(window.sheet.setAccessibleDescription)
         hand.number_begun.connect(self.numbers.begin)
+        hand.numbers_changed.connect(self._hold_still)
         hand.chosen_changed.connect(self._on_chosen_changed)
         hand.begun.connect(self.form.hide_form)
         hand.begun.connect(self.force.hide_form)
