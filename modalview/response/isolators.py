@@ -8,10 +8,10 @@ import numpy.typing as npt
 
 from modalview.assembly.assemble import ALL_FREEDOMS, Assembly
 from modalview.assembly.groups import Groups
-from modalview.assembly.kinematics import AXES, ROTATIONS, Places, Vector, places
+from modalview.assembly.kinematics import AXES, ROTATIONS, Form, Places, Vector, places
 from modalview.assembly.parameters import shown_name
 from modalview.assembly.stretch import acting_point, stretches
-from modalview.model.parts import FREEDOMS, Beam, Body, Link, Model, Motion, Mount, Spring
+from modalview.model.parts import FREEDOMS, Beam, Body, Link, Model, Motion, Mount, RigidLink, Spring
 from modalview.response.weight import UP, Settled, settled, static_stiffness
 
 Array = npt.NDArray[np.float64]
@@ -27,6 +27,8 @@ TILTS: dict[Motion, tuple[str, ...]] = {
 }
 # So small a share of the weight on a foot, or held elsewhere, is rounding.
 NOTHING = 1e-9
+# Bodies whose centres differ by less stand side by side, m.
+SAME_HEIGHT = 1e-6
 
 
 @dataclass(frozen=True, slots=True)
@@ -51,6 +53,9 @@ class Foot:
     rated : float or None, N
     strain : float, N
         What is held against the rated load: a spring's force along itself, else the load; not below zero.
+    seated : bool
+        Whether it is a spring or mount under or over what it carries, which can lift off; not a beam, and not
+        one that joins bodies side by side.
     """
 
     link: str
@@ -64,6 +69,7 @@ class Foot:
     deflection: float
     rated: float | None
     strain: float
+    seated: bool
 
     @property
     def of_rated(self) -> float | None:
@@ -156,7 +162,7 @@ class AtRest:
     @property
     def lifted(self) -> tuple[Foot, ...]:
         """Feet that pull down on what they should carry."""
-        return tuple(foot for foot in self.feet if foot.load < -NOTHING * self.weight)
+        return tuple(foot for foot in self.feet if foot.seated and foot.load < -NOTHING * self.weight)
 
     @property
     def overloaded(self) -> tuple[Foot, ...]:
@@ -201,7 +207,8 @@ class _Survey:
     def __init__(self, assembly: Assembly, found: Settled) -> None:
         self.model, self.here = assembly.model, places(assembly.model)
         self.up, self.found = UP[self.model.motion], found
-        self.depth = _depths(self.model)
+        self.forms: dict[str, list[tuple[Form, float]]] = {}
+        self.depth = self._depths()
         terms = assembly.structure.stiffness
         self.stiffness = static_stiffness(assembly)
         self.terms_of: dict[str, list[int]] = {}
@@ -232,6 +239,7 @@ class _Survey:
             deflection=self._rise(link, on) - self._rise(link, carried),
             rated=link.rated_load.si if link.rated_load is not None else None,
             strain=abs(float(forces[0])) if isinstance(link, Spring) else max(load, 0.0),
+            seated=not isinstance(link, Beam) and not self._level(link),
         )
 
     def on_ground(self) -> float:
@@ -252,10 +260,37 @@ class _Survey:
         (_, carried), (_, on) = ranked
         return (GROUND if carried in self.here.supports else carried), on
 
+    def _depths(self) -> dict[str, int]:
+        """Return over how many links that bear weight each part stands on ground; else of any links."""
+        depth = {support.id: 0 for support in self.model.supports}
+        depth |= {body.id: 0 for body in self.model.bodies if body.dof == ()}
+        bearing = [link for link in self.model.links if self._bears(link)]
+        for links in (bearing, self.model.links):
+            _spread(depth, links)
+        return depth | {body.id: len(depth) for body in self.model.bodies if body.id not in depth}
+
+    def _bears(self, link: Link) -> bool:
+        """Return whether a link passes upright force on."""
+        ends = [self.here.part(end) for end in (link.from_, link.to)]
+        return isinstance(link, RigidLink) or any(
+            bool(np.any(abs(self._rises(link, part)) > RISE)) for part in ends
+        )
+
+    def _level(self, link: Link) -> bool:
+        """Return whether a link joins two bodies side by side."""
+        ends = [self.here.part(end) for end in (link.from_, link.to)]
+        if self.model.motion is Motion.SINGLE_AXIS or not self.here.supports.isdisjoint(ends):
+            return False
+        at = AXES[self.up].index(1)
+        one, other = (float(self.here.centre[part][at]) for part in ends)
+        return abs(one - other) < SAME_HEIGHT
+
     def _rises(self, link: Link, part: str) -> Array:
         """Return the stretch of every stiffness term of a link per unit rise of one of its ends."""
-        forms = [one for one in stretches(link, self.here) if one.family == "stiffness"]
-        return np.array([float(one.form.get((part, self.up), 0.0)) / one.divide for one in forms])
+        if link.id not in self.forms:
+            terms = [one for one in stretches(link, self.here) if one.family == "stiffness"]
+            self.forms[link.id] = [(one.form, one.divide) for one in terms]
+        return np.array([float(form.get((part, self.up), 0.0)) / over for form, over in self.forms[link.id]])
 
     def _point(self, link: Link, part: str) -> tuple[float, float, float]:
         x, y, z = self._attached(link, part)
@@ -276,6 +311,21 @@ class _Survey:
         return float(sum(float(entry) * row[ALL_FREEDOMS.index(name)] for (_, name), entry in form.items()))
 
 
+def _spread(depth: dict[str, int], links: Iterable[Link]) -> None:
+    """Go on from the parts of known depth to those that links join to them."""
+    beside: dict[str, list[str]] = {}
+    for link in links:
+        one, other = (str(end.body or end.support) for end in (link.from_, link.to))
+        beside.setdefault(one, []).append(other)
+        beside.setdefault(other, []).append(one)
+    reached = sorted(depth, key=lambda part: depth[part])
+    for part in reached:  # grows as it goes
+        for other in beside.get(part, ()):
+            if other not in depth:
+                depth[other] = depth[part] + 1
+                reached.append(other)
+
+
 def _rows(model: Model, motion: Array) -> Iterable[tuple[Body, Array]]:
     return zip(model.bodies, motion, strict=True)
 
@@ -283,24 +333,6 @@ def _rows(model: Model, motion: Array) -> Iterable[tuple[Body, Array]]:
 def _sag(body: Body, row: Array, motion: Motion) -> Sag:
     tilt = tuple((name, float(row[ALL_FREEDOMS.index(name)])) for name in TILTS[motion])
     return Sag(body.id, shown_name(body), 0.0 - float(row[ALL_FREEDOMS.index(UP[motion])]), tilt)
-
-
-def _depths(model: Model) -> dict[str, int]:
-    """Return over how many links each part stands on ground; parts held still wholly are ground."""
-    depth = {support.id: 0 for support in model.supports}
-    depth |= {body.id: 0 for body in model.bodies if body.dof == ()}
-    reached = list(depth)
-    beside: dict[str, list[str]] = {}
-    for link in model.links:
-        one, other = (str(end.body or end.support) for end in (link.from_, link.to))
-        beside.setdefault(one, []).append(other)
-        beside.setdefault(other, []).append(one)
-    for part in reached:  # grows as it goes
-        for other in beside.get(part, ()):
-            if other not in depth:
-                depth[other] = depth[part] + 1
-                reached.append(other)
-    return depth | {body.id: len(depth) for body in model.bodies if body.id not in depth}
 
 
 def _carried_groups(model: Model, here: Places, feet: Sequence[Foot]) -> Iterable[Carried]:
@@ -313,8 +345,14 @@ def _carried_groups(model: Model, here: Places, feet: Sequence[Foot]) -> Iterabl
         inside = [part for part in (link.from_.body, link.to.body) if part in tilting]
         if len(inside) == 2:
             groups.join(str(inside[0]), str(inside[1]))
+    leading: dict[str, list[Foot]] = {}
+    for foot in feet:
+        if foot.carried in tilting and (
+            foot.on not in tilting or groups.find(foot.on) != groups.find(foot.carried)
+        ):
+            leading.setdefault(groups.find(foot.carried), []).append(foot)
     for members in groups.lists():
-        own = [foot for foot in feet if foot.carried in members and foot.on not in members]
+        own = leading.get(groups.find(members[0]), [])
         mass = sum(_mass(tilting[part]) for part in members)
         if own and mass > 0:
             yield _carried(model, here, [tilting[part] for part in members], own)

@@ -12,6 +12,8 @@ from modalview.study.results import Request
 
 # A balance is not told closer than a double can.
 LEAST = 1e-16
+# More mounts than this are not named one by one.
+NAMED = 6
 LEFT_OUT = (
     "Not covered: the stability of a high centre of gravity (the weight's own moment once it has tilted), "
     "mounts that stiffen or bottom out, and forces of pipes, ducts and drives."
@@ -94,7 +96,8 @@ def _sentence(found: AtRest) -> str:
         others = f", and {len(over) - 1} more" if len(over) > 1 else ""
         said.append(f"{worst.label} carries {beyond:.1f} % more than its rated load{others}.")
     if lifted:
-        names = ", ".join(foot.label for foot in lifted)
+        names = ", ".join(foot.label for foot in lifted[:NAMED])
+        names += f" and {len(lifted) - NAMED} more" if len(lifted) > NAMED else ""
         verb = "is" if len(lifted) == 1 else "are"
         said.append(f"{names} {verb} pulled upward: a mount that cannot pull lifts off.")
     rated = [foot for foot in found.feet if foot.rated is not None]

@@ -202,6 +202,36 @@ def test_a_spring_a_thousand_million_times_stiffer_upsets_no_balance():
     )
 
 
+def test_a_level_stop_to_ground_does_not_make_a_machine_the_foot_of_its_floor():
+    """The skid also has level stops to ground; it still stands on the floor, not the floor on it."""
+    found = rest(read_model(demo_models() / "2-supply-fan" / "steel-springs.keepclear"))
+    assert [(foot.carried, foot.on) for foot in found.feet] == [
+        ("skid", "floor"),
+        ("skid", "floor"),
+        ("floor", "columns"),
+    ]
+    assert all(foot.seated for foot in found.feet)
+
+
+def test_bodies_side_by_side_lift_nothing_off_each_other():
+    bodies = [
+        {"id": n, "mass": f"{m} kg", "position": [f"{x} m", "1 m"], "dof": ["y"]}
+        for n, m, x in (("a", 100, 0), ("b", 10, 1))
+    ]
+    supports = [{"id": f"g{x}", "position": [f"{x} m", "0 m"]} for x in (0, 1)]
+    links = [
+        spring("ka", {"body": "a"}, {"support": "g0"}, "1e5 N/m"),
+        spring("kb", {"body": "b"}, {"support": "g1"}, "1e5 N/m"),
+        spring("side", {"body": "b"}, {"body": "a"}, "1e5 N/m", direction="y"),
+    ]
+    found = rest(model_of("plane", bodies, links, supports))
+    balanced(found)
+    side = found.feet[2]
+    assert not side.seated
+    assert abs(side.load) == pytest.approx(30 * GRAVITY)
+    assert found.lifted == ()
+
+
 def test_level_springs_are_no_feet_and_held_directions_are_told():
     path = demo_models() / "5-raw-water-vertical-pump" / "design.keepclear"
     found = rest(read_model(path))
