@@ -12,6 +12,7 @@ from modalview.places import demo_models
 PUMP = demo_models() / "1-cooling-water-pump" / "as-built.keepclear"
 DAMPED = demo_models() / "6-vacuum-pump-absorber" / "absorber-210kg-damped.keepclear"
 TRAIN = demo_models() / "3-air-compressor-train" / "as-built.keepclear"
+SET = demo_models() / "4-standby-generator-set" / "dynamic-stiffness.keepclear"
 
 
 @pytest.fixture
@@ -80,3 +81,20 @@ def test_modes_of_a_large_model_go_by_their_number():
     assert pictures.wanted_mode(solution, None) is modes[0]
     with pytest.raises(UsageError, match="found are the modes near excitations, 120, 121, 124"):
         pictures.wanted_mode(solution, 1)
+
+
+@pytest.mark.parametrize("words", [(), ("--of", "mode")])
+def test_a_space_model_is_seen_from_where_it_is_asked(drawn, words):
+    assert "side view" in drawn(SET, *words, "--view", "side")
+    assert not any(text.endswith(" view") for text in drawn(SET, *words, "--view", "turned"))
+
+
+@pytest.mark.parametrize(
+    ("file", "words", "told"),
+    [(PUMP, (), "only a model in space"), (SET, ("--of", "scale"), "goes with the sheet and with --of mode")],
+)
+def test_a_view_that_has_no_meaning_is_refused(file, words, told, capsys, tmp_path):
+    out = tmp_path / "x.png"
+    assert main(["picture", str(file), "-o", str(out), *words, "--view", "front"]) == 2
+    assert told in capsys.readouterr().err
+    assert not out.exists()
