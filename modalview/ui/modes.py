@@ -60,16 +60,19 @@ class ModeRow(QListView):
     def show_found(self, solution: Any) -> None:
         """Show the modes of a model; None shows none.
 
-        The place of the chosen one is kept while there are as many: another part shifts them all.
+        The place of the chosen one is kept while there are as many of each kind: another part shifts them all.
         """
-        row, number = self.currentIndex().row(), self.modes.rowCount()
+        row, kinds = self.currentIndex().row(), self._kinds()
         self.card.set_model(None if solution is None else _model_of(solution))
         silent = self.blockSignals(True)  # not every step of the exchange is a choice
         self.modes.show_solution(solution, current=True)
-        kept = row >= 0 and number == self.modes.rowCount()
+        kept = row >= 0 and kinds == self._kinds()
         self.choose(row if kept else self.modes.worst_row())
         self.blockSignals(silent)
         self.fit_cards()
+
+    def _kinds(self) -> list[str]:
+        return [self.modes.mode(row).kind for row in range(self.modes.rowCount())]
 
     def step(self, by: int) -> None:
         """Choose the next or the previous mode, round the end."""
