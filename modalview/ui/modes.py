@@ -60,7 +60,7 @@ class ModeRow(QListView):
     def show_found(self, solution: Any) -> None:
         """Show the modes of a model; None shows none.
 
-        The place of the chosen one is kept while there are as many of each kind: another part shifts them all.
+        The place of the chosen one is kept while there are as many of each kind: another part shifts all.
         """
         row, kinds = self.currentIndex().row(), self._kinds()
         self.card.set_model(None if solution is None else _model_of(solution))

@@ -206,6 +206,7 @@ class Window(Frame):
         if self.document.model is not None:
             self.parts.show_model(self.document.model, anew=False, system=self.system_of_units())
             self.results.show_model(self.document.model, self.system_of_units())
+            self.sketching.show_units(self.system_of_units())
 
     def _show_title(self, checked: str, freedoms: int) -> None:
         from modalview.drawing import furniture  # noqa: PLC0415  (numpy comes after the first paint)

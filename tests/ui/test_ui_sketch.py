@@ -11,6 +11,7 @@ from PySide6.QtWidgets import QApplication
 from modalview.drawing.primitives import Lines
 from modalview.model.parts import Model, Motion
 from modalview.model.values import STARTING
+from modalview.ui import settings as names
 
 SHIFT, CTRL, ALT = (
     Qt.KeyboardModifier.ShiftModifier,
@@ -125,6 +126,26 @@ def test_the_link_is_seen_while_its_end_is_led_and_no_mode_moves_meanwhile(pump,
     pen.key(Qt.Key.Key_Escape)
     pen.let_go(start)
     assert not pump.sheet.still
+
+
+def test_form_and_numbers_beside_a_drag_follow_the_units_that_are_shown(pump, qtbot):
+    pen = Pen(pump, qtbot)
+    pump.activateWindow()
+    pen.double_click(pen.part("motor"))
+    mass = pump.sketching.form.row("mass")
+    assert (mass.value.text(), mass.converted.text()) == ("620 kg", "")
+    pump.on_setting(names.UNITS, "inch-pound")
+    assert (mass.value.text(), mass.converted.text()) == ("620 kg", "1366.9 lb")
+    pen.key(Qt.Key.Key_Escape)
+    start = pen.part("motor")
+    pen.drag(start, start + QPoint(0, -40), let_go=False)
+    pen.key(Qt.Key.Key_1)
+    fields = pump.sketching.numbers.fields
+    assert fields["y"].text().endswith(" in")
+    pen.over_number("10")
+    assert pump.document.model.bodies[0].position[0].si == pytest.approx(0.254)
+    pen.key(Qt.Key.Key_Escape)
+    pump.on_setting(names.UNITS, "SI")
 
 
 def two_masses(pen):

@@ -47,6 +47,8 @@ class Hand(QObject):
         self.document = document
         self._sheet = sheet
         self.editing: Any = None  # ui.sketch.editing.Editing, which knows the clipboard
+        # In which units numbers beside a drag are shown; the window knows the settings.
+        self.units: Callable[[], str] = lambda: self.model.units or "SI"
         self.hint = ""  # at the foot of the sheet
         self.chosen: tuple[str, ...] = ()
         self.kind: ToolKind = BY_NAME["choose"]
@@ -566,7 +568,7 @@ class Hand(QObject):
         from modalview.drawing import overlay  # noqa: PLC0415  (see above)
         from modalview.ui.values import converted  # noqa: PLC0415
 
-        system = self.model.units or "SI"
+        system = self.units()
         lines = tuple(f"{one.label} {converted(one.si, one.quantity, system)}" for one in self.numbers())
         lines += self._tool.notes() if self._tool is not None else ()
         geometry = self.geometry

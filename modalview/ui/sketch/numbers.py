@@ -57,7 +57,7 @@ class NumberEntry(QFrame):
         return True
 
     def _add(self, row: int, number: Number) -> None:
-        system = self._hand.model.units or "SI"
+        system = self._hand.units()
         label = QLabel(number.label, self)
         line = QLineEdit(show(number.si, number.quantity, system), self)
         line.setAccessibleName(number.label)
@@ -84,7 +84,7 @@ class NumberEntry(QFrame):
         plain = text.strip()
         bare = plain.replace(",", ".").lstrip("+-\u2212").replace(".", "", 1)
         if bare.isdigit():
-            plain = f"{plain} {UNITS[self._hand.model.units or 'SI']}"
+            plain = f"{plain} {UNITS[self._hand.units()]}"
         return typed_entry(plain, number.quantity).si
 
     def _on_edited(self, name: str, text: str) -> None:

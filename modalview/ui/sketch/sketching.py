@@ -27,6 +27,7 @@ class Sketching(QObject):
         self.force = ExcitationForm(window.document, window.sheet)
         self.editing = Editing(self.hand, window.sheet)
         self.hand.editing = self.editing
+        self.hand.units = window.system_of_units
         self._awaited: tuple[tuple[str, ...], bool] | None = None  # parts whose form waits for the sheet
         self._connect()
 
@@ -94,6 +95,11 @@ class Sketching(QObject):
         self.palette.show_motion(model.motion)
         told = "" if model.bodies else " ".join(invitation(model.motion))
         self._window.sheet.setAccessibleDescription(told)
+
+    def show_units(self, system: str) -> None:
+        """Show converted values in other units; nothing typed changes."""
+        self.form.set_system(system)
+        self._window.sheet.update()
 
     # Values beside a part
 
