@@ -213,6 +213,8 @@ _ELSEWHERE = (
     ("Move the cross of a tool / what is chosen", "arrow keys; ten steps with Shift"),
     ("Lead the cross to the next part / choose the next part", "Page Down, Page Up"),
     ("Put a part, or an end of a link, where the cross is", "Enter"),
+    ("Choose what lies behind, in space", "click again at the same place"),
+    ("Lead a link away from the eye, in space", "two clicks at one place on a body, seen straight"),
     ("Type over the numbers beside a drag", "any digit"),
     ("Type the values of what is chosen", "Enter"),
     ("Keep straight / be drawn to nothing while drawing", "Shift / Alt held"),

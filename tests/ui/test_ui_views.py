@@ -197,6 +197,19 @@ def test_a_link_is_attached_at_the_middle_of_a_body_and_to_a_known_point_at_its_
     assert [place(supports[link.to.support])[1] for link in space.model.links] == [0.3, 0.0, 0.3]
 
 
+def test_new_ground_is_as_deep_as_the_body_that_it_carries(space):
+    space.look("top")
+    space.tool("B")
+    space.click(space.at(0.0, 0.4))
+    space.key(Qt.Key.Key_Escape)
+    space.look("front")
+    space.tool("S")
+    space.drag(space.at(0.1, 0.0, -1.0), space.part("b1", 0.5, 0.9))
+    (link,), (support,) = space.model.links, space.model.supports
+    assert place(support)[1] == 0.4
+    assert offset(link.to)[1] == 0.0
+
+
 def test_from_above_a_link_goes_down_to_the_body_below(space):
     draw_body(space, (-0.8, 0.0, 0.0), (0.8, 0.0, 0.2))
     draw_body(space, (-0.3, 0.0, 0.6), (0.3, 0.0, 1.0))
@@ -318,6 +331,14 @@ def test_modes_move_on_the_sheet_and_the_cards_as_they_are_seen(generator, qtbot
     generator.window.grab()
     assert {small.view.viewpoint for small in card._small.values()} == {"front"}
     assert generator.sheet.moving_drawing().items
+
+
+def test_a_page_is_printed_as_the_window_shows_it(generator):
+    from modalview.ui.printing import page
+
+    generator.look("top")
+    sheet = page(generator.window.printing.content(), 1000, 700)[0][2]
+    assert "top view" in [getattr(item, "text", "") for item in sheet.items]
 
 
 def test_a_switch_of_the_view_leaves_off_what_was_begun(space):

@@ -1,6 +1,6 @@
 """Links: pressed on one part and let go on another, or on empty ground; two clicks do as well."""
 
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 from typing import Any
 
 from modalview.errors import InputError
@@ -156,6 +156,14 @@ class Join(Tool):
     def _made(self, model: Model, start: Grip | None, stop: Grip | None) -> tuple[Model, str]:
         if start is None or stop is None:
             raise InputError("a link has two ends")
+        if (
+            depth.in_space(self.hand)
+            and stop.body is not None
+            and start.body is None
+            and start.support is None
+        ):
+            level = float(stop.at.world[depth.hidden(self.hand)])  # new ground is as deep as what it carries
+            start = replace(start, at=depth.deep(self.hand, start.at, level))
         model, one = self.end(model, start)
         model, other = self.end(model, stop)
         return add_link(model, self._kind, one, other, drag=self.hand.place(stop.at.world - start.at.world))
