@@ -120,7 +120,7 @@ def note_items(
 
 def hint_line(text: str, width: float, height: float, text_scale: float) -> tuple[Item, ...]:
     """Return a line at the foot of the sheet that says what to do, or why something was not done."""
-    rows = _wrapped(text, width - 40.0, text_scale)
+    rows = wrapped(text, width - 40.0, text_scale)
     step = line_height(Size.SMALL, text_scale=text_scale)
     wide = max(text_width(row, Size.SMALL, text_scale=text_scale) for row in rows) + 16.0
     top = height - step * len(rows) - 10.0
@@ -140,14 +140,15 @@ def invitation_items(
     y = 0.5 * height
     for number, line in enumerate(lines):
         size = Size.SMALL if number else Size.NORMAL
-        for row in _wrapped(line, width - 60.0, text_scale, size):
+        for row in wrapped(line, width - 60.0, text_scale, size):
             role = Role.MUTED if number else Role.INK
             texts.append(Text(0.5 * width, y, row, role, size, Anchor.MIDDLE, bold=not number))
             y += 1.25 * line_height(Size.NORMAL, text_scale=text_scale)
     return tuple(texts)
 
 
-def _wrapped(text: str, room: float, text_scale: float, size: Size = Size.SMALL) -> list[str]:
+def wrapped(text: str, room: float, text_scale: float, size: Size = Size.SMALL) -> list[str]:
+    """Break a text into lines that fit into so many pixels."""
     rows: list[str] = [""]
     for word in text.split():
         longer = f"{rows[-1]} {word}".strip()
