@@ -40,7 +40,7 @@ RAD_PER_RPM = np.pi / 30
 NATURAL_RPM = float(np.sqrt(STIFFNESS / MASS)) / RAD_PER_RPM
 
 
-def fan(speed: Entry | SpeedRange | None = None, **changes: object) -> Model:
+def fan(speed: Entry | SpeedRange | None = None) -> Model:
     links: tuple[Link, ...] = (
         Spring(
             id="springs",
@@ -62,14 +62,13 @@ def fan(speed: Entry | SpeedRange | None = None, **changes: object) -> Model:
             Excitation(id="2x", name="misalignment", order=2, at=End(body="fan"), direction="y"),
         ),
     )
-    model = Model(
+    return Model(
         title="Fan on springs",
         bodies=(Body(id="fan", mass=Value.typed("900 kg", q.MASS)),),
         supports=(Support(id="ground"),),
         links=links,
         machines=(machine,),
     )
-    return model
 
 
 def traces(speeds: np.ndarray, order: float, force: np.ndarray, ratio: float) -> Traces:
