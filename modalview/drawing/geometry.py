@@ -1,6 +1,5 @@
 """The model on the sheet as arrays of points, each fixed to a body, so that motion is one product."""
 
-from collections.abc import Sequence
 from dataclasses import dataclass, replace
 from typing import Any
 
@@ -205,15 +204,23 @@ class _Collector:
         return Points(_joined(self.rest), _joined(self.arms), _joined(self.bodies))
 
 
-def _joined(arrays: Sequence[Any]) -> Any:
-    """Put arrays one below the other, in steps.
+def _joined(arrays: list[Any]) -> Any:
+    """Put arrays one below the other, in steps; a long list is empty afterwards.
 
     One call over the corners of 100,000 bodies held the interpreter lock for a fifth of a second.
     """
     while len(arrays) > JOINED_AT_ONCE:
         starts = range(0, len(arrays), JOINED_AT_ONCE)
-        arrays = [np.concatenate(arrays[start : start + JOINED_AT_ONCE]) for start in starts]
+        blocks = [np.concatenate(arrays[start : start + JOINED_AT_ONCE]) for start in starts]
+        _let_go(arrays)
+        arrays = blocks
     return np.concatenate(arrays)
+
+
+def _let_go(items: list[Any]) -> None:
+    """Empty a list in steps: all at once held the interpreter lock as long."""
+    while items:
+        del items[-JOINED_AT_ONCE:]
 
 
 def bare_geometry(
@@ -245,6 +252,7 @@ def bare_geometry(
     centres = collector.add(
         view.to_pixels(places.centres), np.zeros_like(places.centres), np.arange(len(places.centres))
     )
+    _let_go(faces_of)
     links = link_ends(model, places, view, boxes, grow, straight=view.straight)
     groups = _collect_links(collector, places, view, links, model.motion)
     marks = _collect_marks(collector, model, places, view, outline)
@@ -292,11 +300,12 @@ def _fit(
     found = fitted(world @ matrix.T, matrix, inner, stretchable=places.stretchable, largest=largest)
     outline = outlines(model, places, found, grow)
     for _ in range(ROUNDS):
-        corners = [
+        corners = [world]
+        corners += [
             places.centres[number] + faces(outline, number, model.motion, viewpoint).reshape(-1, 3)
             for number in range(len(model.bodies))
         ]
-        flat = _joined([world, *corners]) @ matrix.T
+        flat = _joined(corners) @ matrix.T
         found = fitted(flat, matrix, area, stretchable=places.stretchable, largest=largest)
         outline = outlines(model, places, found, grow)
     return replace(found, viewpoint=viewpoint), outline
