@@ -16,13 +16,16 @@ def invitation(motion: Motion) -> tuple[str, ...]:
     >>> invitation(Motion.SHAFT_TRAIN)[0]
     'Press O and drag on the sheet: a disc'
     """
+    last = "Last F and a click on a body: which order of which speed acts there."
     if motion is Motion.SHAFT_TRAIN:
         first = "Press O and drag on the sheet: a disc"
-        then = "Then H and a drag from disc to disc: a shaft. G: a gear pair."
-    else:
-        first = "Press M and drag on the sheet: a mass"
-        then = "Then S and a drag from it to another part, or to empty ground: a spring."
-    return first, then, "Last F and a click on a body: which order of which speed acts there."
+        return first, "Then H and a drag from disc to disc: a shaft. G: a gear pair.", last
+    key, what = ("M", "mass") if motion is Motion.SINGLE_AXIS else ("B", "rigid body")
+    then = "Then S and a drag from it to another part, or to empty ground: a spring. T: a mount."
+    lines = (f"Press {key} and drag on the sheet: a {what}", then, last)
+    if motion is not Motion.SPACE:
+        return lines
+    return *lines, "In the front, side and top views (Ctrl+2 to Ctrl+4) lengths are true."
 
 
 def missing(model: Model | None) -> str:

@@ -99,6 +99,53 @@ def test_a_body_that_turns_is_asked_for_its_inertia_at_once(document, form):
     assert not form.row("inertia").value.isHidden()
 
 
+def in_space(document, form):
+    """Show the form of a body in space that was just drawn; its inertias are starting values."""
+    document.model = Model(motion=Motion.SPACE)
+    document.model, one = add_body(document.model, "body", (0.0, 0.0, 1.0), (2.0, 1.0))
+    form.show_parts((one,), BESIDE, fresh=True)
+    return one
+
+
+def enter(form, key, text):
+    type_over(form.row(key).value, text)
+    press(form.row(key).value, Qt.Key.Key_Return)
+
+
+def test_inertias_that_are_only_right_together_wait_for_each_other(document, form):
+    one = in_space(document, form)
+    enter(form, "Ixx", "820 kg m2")  # more than both others together, which are still to come
+    assert part(document, one).inertia.Ixx.source == STARTING
+    assert form.row("Ixx").value.reason == ""
+    assert form.row("Ixx").reason.text().startswith("not taken yet: ")
+    enter(form, "Iyy", "3650 kg m2")
+    enter(form, "Izz", "3720 kg m2")
+    tensor = part(document, one).inertia
+    assert [value.text for value in (tensor.Ixx, tensor.Iyy, tensor.Izz)] == [
+        "820 kg m2",
+        "3650 kg m2",
+        "3720 kg m2",
+    ]
+    assert form.row("Ixx").reason.text() == form.row("Iyy").reason.text() == ""
+    assert document.stack.count() == 1
+
+
+def test_the_last_of_them_tells_why_when_they_are_wrong_together(document, form):
+    one = in_space(document, form)
+    for key, text in (("Ixx", "9000 kg m2"), ("Iyy", "100 kg m2"), ("Izz", "100 kg m2")):
+        enter(form, key, text)
+    assert "Ixx" in form.row("Izz").value.reason
+    assert part(document, one).inertia.Ixx.source == STARTING
+
+
+def test_what_waited_and_is_lost_by_closing_is_told(document, form, qtbot):
+    in_space(document, form)
+    enter(form, "Ixx", "820 kg m2")
+    with qtbot.waitSignal(form.told) as told:
+        form.close_button.click()
+    assert told.args[0].startswith("Not taken: Ixx 820 kg m2")
+
+
 def test_enter_on_a_starting_value_passes_on_and_gives_nothing(document, form):
     one = drawn(document)
     form.show_parts((one,), BESIDE, fresh=True)

@@ -345,9 +345,9 @@ class Hand(QObject):
     def press(self, event: QMouseEvent) -> None:
         """Return the left button goes down."""
         if self.ready:
-            self.begun.emit()
             if self.kind.name == "choose":
                 self.hint = ""
+            self.begun.emit()
             self._pressed = self._pointer = self._pointed(event)
             self._down, self.cursor = True, None
             self._after(lambda: self.tool.press(self._pointer))

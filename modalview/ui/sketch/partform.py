@@ -6,7 +6,7 @@ from typing import Any
 from PySide6.QtCore import QRect, QTimer, Signal
 from PySide6.QtWidgets import QLabel, QToolButton, QWidget
 
-from modalview.errors import FaultsError, InputError
+from modalview.errors import FaultsError, InputError, ModelFaultsError
 from modalview.model.addresses import Address
 from modalview.model.filling import typed_together
 from modalview.model.forms import FormLine, form_lines, kind_of, part_of
@@ -23,6 +23,7 @@ class PartForm(FloatingForm):
     """Edits one part or several; every text taken is one edit."""
 
     committed = Signal()
+    told = Signal(str)  # what was lost by closing
 
     def __init__(self, document: Document, parent: QWidget) -> None:
         super().__init__(parent)
@@ -225,7 +226,9 @@ class PartForm(FloatingForm):
                 self._document.model, self._typed(lines, slot, text), self._said(lines, slot, text)
             )
         except InputError as error:
-            return self._why_not(error)
+            why = self._why_not(error)
+            later = slot == VALUE and isinstance(error, ModelFaultsError) and self._to_come(lines)
+            return "" if later and self._keep(lines, text, f"not taken yet: {why}") else why
         for other in self._group(lines):
             if self._waiting.pop(other, None) is not None:
                 self.row(other).tell("", refused=False)
@@ -283,11 +286,21 @@ class PartForm(FloatingForm):
         ]
         if not missing:
             return False
-        self._waiting = kept
-        for key in group:
-            self.row(key).tell("", refused=False)
         labels = [needed[key][0].label for key in missing]
-        self.row(lines[0].key).tell(f"waits for {' and '.join(labels)}", refused=False)
+        return self._keep(lines, text, f"waits for {' and '.join(labels)}")
+
+    def _to_come(self, lines: list[FormLine]) -> bool:
+        """Tell whether others of a group may still be typed, with which this text would be right."""
+        return any(
+            other[0].needed and key not in (*self._waiting, lines[0].key)
+            for key, other in self._group(lines).items()
+        )
+
+    def _keep(self, lines: list[FormLine], text: str, why: str) -> bool:
+        self._waiting[lines[0].key] = text
+        for key in self._group(lines):
+            self.row(key).tell("", refused=False)
+        self.row(lines[0].key).tell(why, refused=False)
         self.fit()
         return True
 
@@ -309,6 +322,14 @@ class PartForm(FloatingForm):
         """Close without taking what was typed last."""
         self._waiting = {}
         super().leave()
+
+    def hide_form(self) -> None:
+        """Close; tell of what waited for other lines and is lost."""
+        lost = " and ".join(f"{key} {text}" for key, text in self._waiting.items())
+        self._waiting = {}
+        super().hide_form()
+        if lost:
+            self.told.emit(f"Not taken: {lost}, which waited for the other lines of its group.")
 
 
 def _agreed(lines: list[FormLine]) -> FormLine:

@@ -41,6 +41,7 @@ class Sketching(QObject):
         hand.chosen_changed.connect(self._on_chosen_changed)
         hand.begun.connect(self.form.hide_form)
         hand.begun.connect(self.force.hide_form)
+        self.form.told.connect(hand.say)
         hand.force_asked.connect(self._ask_force)
         hand.drawn.connect(lambda part: self._ask_values((part,), fresh=True))
         hand.form_asked.connect(lambda parts: self._ask_values(parts, fresh=False))
