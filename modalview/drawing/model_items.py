@@ -54,6 +54,7 @@ def part_items(
 def _bodies(geometry: SheetGeometry, points: Floats) -> list[Item]:
     # Parts behind a body in space shimmer through, as hidden edges are told by faint lines.
     fill = 0.86 if geometry.model.motion is Motion.SPACE else 1.0
+    fill = 0.7 if geometry.view.straight else fill  # where more is hidden
     few_pixels = len(geometry.centres) > (CROWDED if geometry.grow < FULL else TINY)
     if few_pixels:  # nothing to be seen in them: outlines alone
         return [Lines(outline(points[indices]), Role.INK, 1.0) for indices in geometry.faces]
