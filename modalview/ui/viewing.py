@@ -89,6 +89,7 @@ class Viewing(QObject):
         window._settings.set(names.VIEWPOINT, viewpoint)  # noqa: SLF001  (see above)
         self._show(viewpoint)
         window.sheet.setFocus()
+        window.tell(f"{viewpoint.capitalize()} view. {VIEWS[viewpoint]}.")
 
     def _show(self, viewpoint: str) -> None:
         self.switch.buttons[viewpoint].setChecked(True)
@@ -115,4 +116,4 @@ class Viewing(QObject):
         wide = title_size(geometry.model.title, sheet, geometry.text_scale)[0]
         x, y, _, _ = switch_room(geometry.text_scale, geometry.width - 2 * MARGIN - wide)
         self.switch.stand(x, y)
-        self.switch.raise_()
+        self.switch.lower()  # forms stand before it

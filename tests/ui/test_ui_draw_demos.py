@@ -313,6 +313,38 @@ def test_the_generator_set_from_a_starting_point(person, tmp_path, qtbot):
 
 
 @pytest.mark.slow
+def test_the_generator_set_by_mouse_from_the_front_and_from_above(person, tmp_path, qtbot):
+    person.begin_empty("Empty sheet, space")
+    person.key(Qt.Key.Key_2, CTRL)
+    person.draw("B", person.at(-1.5, 0.0, 0.4), person.at(1.5, 0.0, 1.6))
+    person.unfold()
+    person.fill(mass="3200 kg", Ixx="820 kg m2", Iyy="3650 kg m2", Izz="3720 kg m2")
+    person.fill(position_z="1.05 m", tolerance_of_the_part="5 %", drawn_height="1.24 m")
+    person.key(Qt.Key.Key_Escape)
+    person.key(Qt.Key.Key_4, CTRL)
+    for x in (-1.0, 0.2, 1.2):
+        for y in (-0.5, 0.5):
+            person.tool("T")
+            person.click(person.at(x, y, 1.05))
+            person.click(person.at(x, y, 1.05))
+            person.fill(stiffness_x="5.4e5 N/m", stiffness_y="5.4e5 N/m", stiffness_z="9.0e5 N/m")
+            person.unfold()
+            place = {"x": {-1.0: "-1.05 m", 0.2: "0.15 m", 1.2: "1.2 m"}[x], "y": f"{0.96 * y:g} m"}
+            person.fill(**{f"first end, offset {axis}": text for axis, text in place.items()})
+            person.fill(tolerance_of_the_part="15 %", dynamic_ratio="1.8")
+            person.key(Qt.Key.Key_Escape)
+    person.key(Qt.Key.Key_2, CTRL)
+    middle = person.part("b1")
+    person.push(middle, "generator set", "1500 rpm", "15 %", "", "0.5x", "rx", "300 N m", "half order")
+    person.push(person.at(0.9, 0.0, 1.15), "1x", "rotating", "G 6.3 of 700 kg", "unbalance")
+    person.push(middle, "3x", "rx", "1800 N m", "firing")
+    person.change_machine()
+    for axis, place in (("x", "0.9 m"), ("z", "0.1 m")):
+        person.fill(**{f"1x: where it acts, offset {axis}": place})
+    same(saved(person, tmp_path, qtbot), "4-standby-generator-set/dynamic-stiffness")
+
+
+@pytest.mark.slow
 def test_the_vacuum_pump_with_its_absorber_by_mouse(person, tmp_path, qtbot):
     person.begin_empty("Empty sheet, single axis")
     at, part = person.at, person.part

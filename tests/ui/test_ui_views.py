@@ -306,6 +306,7 @@ def test_the_view_is_chosen_by_keys_and_menu_and_remembered(generator, make_wind
         generator.key(key, CTRL)
         assert generator.laid_out().view.viewpoint == view
         assert generator.window.viewing.switch.buttons[view].isChecked()
+    assert "From above: x to the right, y up" in generator.window.statusBar().currentMessage()
     generator.window.menus.actions["viewing.side"].trigger()
     assert generator.laid_out().view.viewpoint == "side"
     other = make_window()
