@@ -51,6 +51,8 @@ class DampedTerms:
         N s/m or N m s/rad, not negative.
     to_bodies : csr_array (bodies * freedoms, N)
         Motion of every body's freedoms.
+    idle : csr_array (bodies * freedoms, i)
+        Motions left out: massless, and neither a spring nor a dashpot resists them.
     free : array (N, r)
         Basis of the motions that stretch no spring.
     drifting : int
@@ -70,6 +72,7 @@ class DampedTerms:
     resisting: sp.csr_array
     damping: Array
     to_bodies: sp.csr_array
+    idle: sp.csr_array
     free: Array
     drifting: int
     scale: Array
@@ -130,6 +133,7 @@ def damped_terms(assembly: Assembly) -> DampedTerms:
     free = _free_motions(assembly, change)
     mass = assembly.pencil().M[:, np.flatnonzero(~structure.coordinates.massless)]
     scale = np.ones(change.shape[1])
+    idle = np.setdiff1d(np.arange(assembly.n, table.shape[1]), change.indices)
     scale[:inertial] = assembly.pencil().scale[~structure.coordinates.massless]
     return DampedTerms(
         inertial=inertial,
@@ -141,6 +145,7 @@ def damped_terms(assembly: Assembly) -> DampedTerms:
         resisting=resisting,
         damping=damping[dashpots],
         to_bodies=sp.csr_array(table @ change),
+        idle=sp.csr_array(table[:, idle]),
         free=free,
         drifting=_drifting(assembly, resisting, free, change.shape[1]),
         scale=scale,

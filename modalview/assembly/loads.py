@@ -10,7 +10,7 @@ from modalview.assembly.assemble import Assembly
 from modalview.assembly.directions import direction_vector, length
 from modalview.assembly.kinematics import AXES, TRANSLATIONS, Form, Number, Places, Vector, cross, places
 from modalview.assembly.parameters import Case, values_at
-from modalview.model.parts import FREEDOMS, Direction, End, Excitation, Motion
+from modalview.model.parts import FREEDOMS, Direction, End, Excitation, Model, Motion
 
 ComplexArray = npt.NDArray[np.complex128]
 
@@ -35,22 +35,36 @@ def unit_force(assembly: Assembly, excitation: Excitation) -> ComplexArray | Non
     if excitation.at is None:
         return None
     if excitation.at.support is not None:
-        return _base_motion(assembly, excitation.at.support, excitation)
-    here = places(assembly.model)
-    pushes = _pushes(excitation, excitation.at, here)
-    if pushes is None:
+        return _base_motion(assembly, excitation)
+    force = body_force(assembly.model, excitation)
+    if force is None:
         return None
-    names = FREEDOMS[assembly.model.motion]
+    return np.asarray(assembly.structure.coordinates.to_bodies.T @ force, dtype=complex)
+
+
+def body_force(model: Model, excitation: Excitation) -> ComplexArray | None:
+    """Return a unit force on the freedoms of all bodies (bodies * freedoms,), before any constraint.
+
+    None where no point on a body is given, or no direction where one is needed.
+    """
+    if excitation.at is None or excitation.at.support is not None:
+        return None
+    pushes = _pushes(excitation, excitation.at, places(model))
+    return None if pushes is None else over_bodies(model, pushes)
+
+
+def over_bodies(model: Model, forms: Sequence[tuple[complex, Form]]) -> ComplexArray:
+    """Return a weighted sum of forms over the freedoms of all bodies, in their order; supports left out."""
+    names = FREEDOMS[model.motion]
     column = {
-        (body.id, name): i
-        for i, (body, name) in enumerate((b, f) for b in assembly.model.bodies for f in names)
+        (body.id, name): i for i, (body, name) in enumerate((b, f) for b in model.bodies for f in names)
     }
-    force = np.zeros(len(column), dtype=complex)
-    for weight, form in pushes:
+    found = np.zeros(len(column), dtype=complex)
+    for weight, form in forms:
         for key, entry in form.items():
             if key in column:
-                force[column[key]] += weight * float(entry)
-    return np.asarray(assembly.structure.coordinates.to_bodies.T @ force, dtype=complex)
+                found[column[key]] += weight * float(entry)
+    return found
 
 
 def _pushes(excitation: Excitation, at: End, here: Places) -> list[tuple[complex, Form]] | None:
@@ -98,18 +112,30 @@ def _unit(vector: Sequence[Number]) -> Vector:
     return (float(vector[0]) / size, float(vector[1]) / size, float(vector[2]) / size)
 
 
-def _base_motion(assembly: Assembly, support: str, excitation: Excitation) -> ComplexArray | None:
-    """Return -(sum k a g^T y) for the motion of a support along the excitation's direction."""
+def support_motion(assembly: Assembly, excitation: Excitation) -> ComplexArray | None:
+    """Return the unit motion of a support, over ``support_freedoms`` (s,), m.
+
+    None where it acts at no support, no direction is given, or in a shaft train, which turns only.
+    """
     here = places(assembly.model)
     wanted = "y" if here.motion is Motion.SINGLE_AXIS else excitation.direction
-    if wanted is None or here.motion is Motion.SHAFT_TRAIN:
+    support = excitation.at.support if excitation.at is not None else None
+    if support is None or wanted is None or here.motion is Motion.SHAFT_TRAIN:
         return None
-    weights = _directions(wanted, excitation.axis, here)
-    terms = assembly.structure.stiffness
-    moved = np.zeros(len(terms.support_freedoms), dtype=complex)
-    for weight, direction in weights:
+    names = assembly.structure.stiffness.support_freedoms
+    moved = np.zeros(len(names), dtype=complex)
+    for weight, direction in _directions(wanted, excitation.axis, here):
         for name, component in zip(TRANSLATIONS, direction, strict=True):
-            if (support, name) in terms.support_freedoms:
-                moved[terms.support_freedoms.index((support, name))] += weight * float(component)
+            if (support, name) in names:
+                moved[names.index((support, name))] += weight * float(component)
+    return moved
+
+
+def _base_motion(assembly: Assembly, excitation: Excitation) -> ComplexArray | None:
+    """Return -(sum k a g^T y) for the motion of a support along the excitation's direction."""
+    moved = support_motion(assembly, excitation)
+    if moved is None:
+        return None
+    terms = assembly.structure.stiffness
     forces = sp.diags_array(terms.values(values_at(assembly.parameters, Case.NOMINAL))) @ terms.support_rows
     return np.asarray(-(terms.rows.T @ (forces @ moved)), dtype=complex)
