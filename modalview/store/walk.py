@@ -22,6 +22,8 @@ from modalview.units.quantities import RATIO, Quantity
 # Objects in `given` may nest, but not so deeply that writing them could fail.
 DEEPEST_GIVEN = 32
 LONGEST_SHOWN = 40
+# Of a list that has been read; the tree is not needed again.
+LET_GO_AT_ONCE = 1000
 # Looking for the key that was meant is slow; past so many faults it no longer helps.
 MOST_HINTS = 200
 BLANK = Entry("", math.nan)
@@ -190,10 +192,13 @@ class Walk:
         if shape.items is None or (shape.length and shape.length != len(node)):
             return None
         quantity = shape.items.quantity
-        return tuple(
+        found = tuple(
             self._read(shape.items, quantity, item, self._item_path(path, number, item))
             for number, item in enumerate(node)
         )
+        while len(node) > LET_GO_AT_ONCE:  # all at once held the interpreter lock for a twentieth of a second
+            del node[-LET_GO_AT_ONCE:]
+        return found
 
     def _item_path(self, path: str, number: int, item: Any) -> str:
         name = item.get("id") if isinstance(item, JsonMap) else None
