@@ -105,8 +105,6 @@ class Doubts(QWidget):
         entry = DoubtEntry(self)
         entry.clicked.connect(lambda: self.parts_chosen.emit(entry.parts))
         self._column.addWidget(entry)
-        # Made last, it would come after all else of the window.
-        QWidget.setTabOrder(self.entries[-1] if self.entries else self, entry)
         self.entries.append(entry)
 
 

@@ -1,5 +1,6 @@
 """The right column: machines and their speeds, orders checked, what was not checked, notes."""
 
+from itertools import pairwise
 from typing import Any
 
 from PySide6.QtCore import Qt, Signal
@@ -110,6 +111,7 @@ class Results(QScrollArea):
         self._theme: Theme = LIGHT
         self._machines: dict[str, MachineForm] = {}
         self._cards: list[CheckCard] = []
+        self._led: list[QWidget] = []
         self.setObjectName("results")
         self.setWidgetResizable(True)
         self.setHorizontalScrollBarPolicy(Qt.ScrollBarPolicy.ScrollBarAlwaysOff)
@@ -214,6 +216,18 @@ class Results(QScrollArea):
         self.doubts.show_known(self._document.model, self._analysis)
         _say(self.not_checked, outlook.not_checked if outlook else ())
         _say(self.notes, outlook.notes if outlook else ())
+        self._lead_tab_key()
+
+    def _lead_tab_key(self) -> None:
+        """Let the Tab key go down the column; what was made last would come after all else of the window."""
+        places: list[QWidget] = []
+        for form in self._machines.values():
+            places += [form.change, form.remove, *(field.line for field in form.fields.values())]
+        places += [*self._cards, self.add, *self.doubts.entries]
+        if places != self._led:
+            self._led = places
+            for before, after in pairwise([self, *places]):
+                QWidget.setTabOrder(before, after)
 
 
 def _say(label: QLabel, lines: tuple[str, ...]) -> None:

@@ -111,7 +111,7 @@ def test_a_model_that_cannot_be_analysed_still_has_its_doubts(window, qtbot, tmp
     assert doubts.entries[0].found.text() == "Body m4 floats: no link joins it to anything."
 
 
-def test_the_tab_key_comes_to_the_doubts_from_the_fields_of_the_machine(window, qtbot, tmp_path):
+def test_the_tab_key_comes_to_the_doubts_after_machine_and_orders(window, qtbot, tmp_path):
     path = chain(tmp_path, "4e12 N/m")
     document = json.loads(path.read_text(encoding="utf-8"))
     excitation = {"id": "1x", "order": 1}
@@ -123,5 +123,8 @@ def test_the_tab_key_comes_to_the_doubts_from_the_fields_of_the_machine(window, 
     [form] = window.results._machines.values()
     last = list(form.fields.values())[-1]
     last.line.setFocus()
-    window.results.focusNextChild()
-    assert window.focusWidget() is window.results.doubts.entries[0]
+    passed = []
+    for _ in range(3):
+        window.results.focusNextChild()
+        passed.append(window.focusWidget())
+    assert passed == [window.results._cards[0], window.results.add, window.results.doubts.entries[0]]
