@@ -87,9 +87,13 @@ class Dynamics:
         return BySparse.of(terms, damping)
 
     @cached_property
+    def undamped_modes(self) -> Modes:
+        """All undamped modes."""
+        return self.modes if self.modes is not None else find_modes(self.assembly.pencil())
+
+    @cached_property
     def _by_modes(self) -> ByModes:
-        modes = self.modes if self.modes is not None else find_modes(self.assembly.pencil())
-        return ByModes.of(self.assembly, self.terms, modes)
+        return ByModes.of(self.assembly, self.terms, self.undamped_modes)
 
     @cached_property
     def _undamped(self) -> Undamped:

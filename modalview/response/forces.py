@@ -229,7 +229,7 @@ def _end_point(link: Link, here: Places, number: int) -> tuple[float, float, flo
 def _end_forces(assembly: Assembly, here: Places, forms: Sequence[tuple[int, Form]]) -> sp.csr_array:
     """Return the wrench (12 links, forms) of each form on the parts at both ends of its link."""
     entries = []
-    links = assembly.model.links
+    links, names = assembly.model.links, FREEDOMS[assembly.model.motion]
     for column, (number, form) in enumerate(forms):
         if number < 0:
             continue
@@ -242,7 +242,7 @@ def _end_forces(assembly: Assembly, here: Places, forms: Sequence[tuple[int, For
             wrench = [*force[:3], *(m - float(c) for m, c in zip(force[3:], lost, strict=True))]
             size = max(map(abs, force), default=0.0)
             for i, value in enumerate(wrench):
-                if abs(value) > ROUNDING * size * (1 + max(abs(float(a)) for a in arm)):
+                if SIX[i] in names and abs(value) > ROUNDING * size * (1 + max(abs(float(a)) for a in arm)):
                     entries.append((12 * number + 6 * place + i, column, value))
     return _sparse(entries, (12 * len(links), len(forms)))
 

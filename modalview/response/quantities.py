@@ -17,6 +17,8 @@ from modalview.response.motion import TAKES_PART, SteadyMotion
 Array = npt.NDArray[np.float64]
 ComplexArray = npt.NDArray[np.complex128]
 
+# A motion this small against the parts it is the sum of is their rounding.
+CANCELLED = 1e-14
 ROOT_HALF = np.sqrt(0.5)
 
 
@@ -37,7 +39,9 @@ class Point:
 
         Along all directions it is the larger axis of the ellipse that the point moves on.
         """
-        found = larger_axis(self.rows @ motion.coordinates) * size
+        found = larger_axis(self.rows @ motion.coordinates)
+        parts = np.abs(self.rows) @ np.abs(motion.coordinates)
+        found = np.where(found > CANCELLED * parts.max(axis=0), found, 0.0) * size
         if motion.infinite is None:
             return found
         # Infinite only where this point takes part in the shape that grows.
