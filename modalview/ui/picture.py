@@ -65,7 +65,7 @@ def window_picture(file: Path | None, path: Path, look: Look) -> None:
     """
     program = application()
     with tempfile.TemporaryDirectory() as folder:
-        window = new_window(_settings(Path(folder), look))
+        window = new_window(settings_for(Path(folder), look))
         failures: list[Exception] = []
         window.analysis.failed.connect(failures.append)
         try:
@@ -73,11 +73,11 @@ def window_picture(file: Path | None, path: Path, look: Look) -> None:
             window.show()
             if file is not None:
                 window.document.open(file, example=True)
-                _wait(program, lambda: failures or _settled(window))
+                wait_for(program, lambda: failures or settled(window))
                 if failures:
                     raise failures[0]
                 _arrange(window, look)
-            _wait(program, lambda: True)
+            wait_for(program, lambda: True)
             if not window.grab().save(str(path)):
                 raise InputError(f"{path} cannot be written as a picture; is the folder there?")
         finally:
@@ -85,7 +85,8 @@ def window_picture(file: Path | None, path: Path, look: Look) -> None:
             program.processEvents()
 
 
-def _settings(folder: Path, look: Look) -> Settings:
+def settings_for(folder: Path, look: Look) -> Settings:
+    """Return settings of their own for a picture, kept in a folder."""
     settings = Settings(QSettings(str(folder / "look.ini"), QSettings.Format.IniFormat))
     settings.set(names.THEME, look.theme)
     settings.set(names.AUTOMATIC, look.automatic)
@@ -95,7 +96,8 @@ def _settings(folder: Path, look: Look) -> Settings:
     return settings
 
 
-def _settled(window: Window) -> bool:
+def settled(window: Window) -> bool:
+    """Tell whether all that is known of the model is shown."""
     analysis = window.analysis
     if analysis.refusal is not None or analysis.looking:
         return analysis.refusal is not None
@@ -114,7 +116,7 @@ def _arrange(window: Window, look: Look) -> None:
         window.on_why()
 
 
-def _wait(program: QApplication, ready: Callable[[], bool]) -> None:
+def wait_for(program: QApplication, ready: Callable[[], bool]) -> None:
     """Run the program until it is ready, and a little longer for layouts to settle."""
     end = time.monotonic() + _PATIENCE_S
     last: list[float] = []
