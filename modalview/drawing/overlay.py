@@ -107,7 +107,7 @@ def note_items(
     width, height = sheet
     wide = max(text_width(line, Size.SMALL, text_scale=text_scale) for line in lines) + 12.0
     step = line_height(Size.SMALL, text_scale=text_scale)
-    left = x + 16.0 if x + 20.0 + wide < width else x - 16.0 - wide
+    left = x + 16.0 if x + 20.0 + wide < width else max(x - 16.0 - wide, 4.0)
     top = y + 16.0 if y + 26.0 + step * len(lines) < height else y - 22.0 - step * len(lines)
     items: list[Item] = [
         Box(left, top, wide, step * len(lines) + 6.0, 3.0, Role.GHOST, Role.PAPER, 1.0, 0.92)

@@ -138,6 +138,14 @@ def test_the_last_of_them_tells_why_when_they_are_wrong_together(document, form)
     assert part(document, one).inertia.Ixx.source == STARTING
 
 
+def test_a_tolerance_without_per_cent_is_told_in_words_of_the_form(document, form):
+    document.open(PUMP, example=True)
+    form.show_parts(("motor",), BESIDE)
+    type_over(form.row("mass").tolerance, "3")
+    press(form.row("mass").tolerance, Qt.Key.Key_Return)
+    assert form.row("mass").tolerance.reason.startswith("tolerance of mass must be")
+
+
 def test_what_waited_and_is_lost_by_closing_is_told(document, form, qtbot):
     in_space(document, form)
     enter(form, "Ixx", "820 kg m2")

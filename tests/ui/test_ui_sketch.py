@@ -8,6 +8,7 @@ from PySide6.QtCore import QPoint, Qt
 from PySide6.QtGui import QGuiApplication
 from PySide6.QtWidgets import QApplication
 
+from modalview.drawing.overlay import note_items
 from modalview.drawing.primitives import Lines
 from modalview.model.parts import Model, Motion
 from modalview.model.values import STARTING
@@ -112,6 +113,14 @@ def test_the_fields_of_numbers_stand_beside_what_is_drawn_not_over_it(sketch, st
     sketch.key(Qt.Key.Key_Escape)
 
 
+def test_a_note_beside_the_pointer_lies_on_the_sheet_however_long_it_is():
+    for x in (10.0, 300.0, 590.0):
+        box = note_items(
+            x, 100.0, ("both ends are on the left one; lead the spring to another",), 1.5, (600.0, 400.0)
+        )[0]
+        assert box.x >= 0
+
+
 def test_the_link_is_seen_while_its_end_is_led_and_no_mode_moves_meanwhile(pump, qtbot):
     pen = Pen(pump, qtbot)
     pump.activateWindow()
@@ -174,6 +183,8 @@ def test_a_link_may_be_made_by_two_clicks(sketch):
     two_masses(sketch)
     sketch.tool("S")
     sketch.click(sketch.part("left"))
+    assert hint(sketch).startswith("Spring: now click on another part, or on empty ground.")
+    assert sketch.window.sketching.hand.tool.notes() == ("now the other end",)
     sketch.click(sketch.part("right"))
     assert len(model(sketch).links) == 1
 

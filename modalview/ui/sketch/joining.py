@@ -67,6 +67,8 @@ class Join(Tool):
         self._to = self.grip(at)
         if not self._waits and self._pressed is not None and not at.far(self._pressed):
             self._waits = True
+            ground = "" if self._kind in OF_BODIES else ", or on empty ground"
+            self.hand.say(f"{self._kind.capitalize()}: now click on another part{ground}. Esc leaves it off.")
             return
         why = self._why_not()
         if why:
@@ -179,12 +181,17 @@ class Join(Tool):
         model, support = add_support(model, self.hand.place(grip.at.world))
         return model, End(support=support)
 
+    def _gone_on(self) -> bool:
+        """Tell whether the pointer has left the place of the first end."""
+        start, stop = self._from.at, self._to.at
+        return Pointer(start.x, start.y).far(Pointer(stop.x, stop.y))
+
     def notes(self) -> tuple[str, ...]:
         """Return what an end would be on, or why it cannot be there."""
         if self._to is None:
             return ()
         if self._from is not None and (why := self._why_not()):
-            return (why,)
+            return ("now the other end",) if self._waits and not self._gone_on() else (why,)
         if self._along_sight():
             behind = depth.along_sight(self.hand, self._from.body, self._from.at)[1]
             end = "the ground" if behind is None else self.hand.name_of(behind)

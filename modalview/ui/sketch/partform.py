@@ -258,9 +258,9 @@ class PartForm(FloatingForm):
             return str(error)
         told = []
         for fault in error.faults:
-            place, _, key = fault.path.partition(" . ")
+            place, *keys = fault.path.split(" . ")
             own = any(place.endswith(f'"{one}"') for one in self._ids)
-            told.append(f"{key} {fault.reason}" if own else str(fault))
+            told.append(f"{' of '.join(reversed(keys))} {fault.reason}" if own and keys else str(fault))
         return "\n".join(dict.fromkeys(told))
 
     # Lines that are only right together
