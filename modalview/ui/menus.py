@@ -54,6 +54,7 @@ MENUS: dict[str, tuple[Item, ...]] = {
         Item("&Copy values", "on_copy"),
         Item("&Paste values", "on_paste"),
         SEPARATOR,
+        Item("&Title of the model…", "sketching.ask_title"),
         Item("&Settings…", "on_settings", "Ctrl+,"),
     ),
     "&Parts": (

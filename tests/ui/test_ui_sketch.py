@@ -13,6 +13,7 @@ from modalview.drawing.primitives import Lines
 from modalview.model.parts import Model, Motion
 from modalview.model.values import STARTING
 from modalview.ui import settings as names
+from modalview.ui.sketch.asking import AskText
 
 SHIFT, CTRL, ALT = (
     Qt.KeyboardModifier.ShiftModifier,
@@ -380,6 +381,24 @@ def test_a_double_click_asks_for_the_values_of_a_part(sketch):
     sketch.double_click(where)
     sketch.type("750 kg")
     assert model(sketch).bodies[1].mass.text == "750 kg"
+
+
+def test_the_title_is_asked_at_its_block_and_in_the_menu_and_can_be_undone(sketch):
+    window = sketch.window
+    corner = QPoint(round(sketch.laid_out().width) - 40, 30)
+    sketch.double_click(corner)
+    (dialog,) = (one for one in window.findChildren(AskText) if one.isVisible())
+    dialog.line.setText(" Pump P-3,  as built ")
+    sketch.key_on(dialog.line, Qt.Key.Key_Return)
+    assert model(sketch).title == "Pump P-3, as built"
+    assert window.windowTitle().startswith("Pump P-3, as built")
+    window.document.stack.undo()
+    assert model(sketch).title == ""
+    sketch.double_click(QPoint(40, round(sketch.laid_out().height) - 40))  # elsewhere nothing is asked
+    assert [one for one in window.findChildren(AskText) if one.isVisible()] == []
+    window.menus.actions["sketching.ask_title"].trigger()
+    (dialog,) = (one for one in window.findChildren(AskText) if one.isVisible())
+    dialog.close()
 
 
 def test_find_shows_the_part_that_is_named(sketch):

@@ -37,6 +37,7 @@ class Hand(QObject):
     drawn = Signal(str)  # a part that was just drawn: its values are to be typed
     force_asked = Signal(str, tuple)  # body, place (m)
     form_asked = Signal(tuple)  # parts whose values are to be typed
+    title_asked = Signal()  # the title block was clicked twice
     begun = Signal()  # the mouse goes to work, or another tool was taken in hand
     told = Signal(str)  # a hint, or why something was not done
     numbers_changed = Signal()
@@ -379,8 +380,20 @@ class Hand(QObject):
             if part is not None:
                 self.choose((part,))
                 self.form_asked.emit((part,))
+            elif self._on_title(at):
+                self.title_asked.emit()
         elif self.ready:  # two quick clicks of a tool are two clicks
             self.press(event)
+
+    def _on_title(self, at: Pointer) -> bool:
+        """Tell whether a pointer is on the title block, at the top right of the sheet."""
+        from modalview.drawing import furniture  # noqa: PLC0415  (see above)
+
+        geometry = self.geometry
+        sheet = geometry.width, geometry.height
+        title = furniture.title_lines(self.model).title
+        wide, high = furniture.title_size(title, sheet, geometry.text_scale)
+        return at.x >= sheet[0] - furniture.MARGIN - wide and at.y <= furniture.MARGIN + high
 
     def _after(self, do: Callable[[], None]) -> None:
         try:

@@ -1,10 +1,12 @@
 """Puts hand, palette, numbers and forms into the window and passes on what each tells."""
 
+from dataclasses import replace
 from typing import Any
 
 from PySide6.QtCore import QObject, QRect
 
 from modalview.model.removing import without
+from modalview.ui.sketch.asking import AskText
 from modalview.ui.sketch.editing import Editing
 from modalview.ui.sketch.excitationform import ExcitationForm
 from modalview.ui.sketch.hand import Hand
@@ -44,6 +46,7 @@ class Sketching(QObject):
         self.form.told.connect(hand.say)
         hand.force_asked.connect(self._ask_force)
         hand.drawn.connect(lambda part: self._ask_values((part,), fresh=True))
+        hand.title_asked.connect(self.ask_title)
         hand.form_asked.connect(lambda parts: self._ask_values(parts, fresh=False))
         window.parts.part_chosen.connect(self._on_part_of_table)
         window.results.force_asked.connect(self.add_force)
@@ -108,6 +111,18 @@ class Sketching(QObject):
         """Ask for the values of what is chosen."""
         if self.hand.chosen:
             self._ask_values(self.hand.chosen, fresh=False)
+
+    def ask_title(self) -> None:
+        """Ask what the model is called."""
+        model = self._window.document.model
+        if model is not None:
+            AskText("Give title", "Title of the model", model.title, self._give_title, self._window).open()
+
+    def _give_title(self, text: str) -> None:
+        title = " ".join(text.split())
+        model = self._window.document.model
+        if title != model.title:
+            self.hand.change(replace(model, title=title), f'Title "{title}"')
 
     def _ask_values(self, parts: tuple[str, ...], *, fresh: bool) -> None:
         self._awaited = parts, fresh
