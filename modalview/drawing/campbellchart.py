@@ -23,6 +23,7 @@ from modalview.drawing.primitives import (
     Text,
 )
 from modalview.drawing.speedaxes import (
+    MOST_TICKS,
     SpeedFrame,
     axes_items,
     right_room,
@@ -112,7 +113,9 @@ def _frame(
     rows = 2 if sum(_end(content, one) > content.highest_hz for one in content.orders) > 1 else 1
     top, bottom = reached + rows * step + 10.0, size[1] - step - STRIP * text_scale - 14.0
     bottom = max(bottom, top + 40.0)
-    ticks = value_ticks(0.0, content.highest_hz, int((bottom - top) / (step + 9.0)), logarithmic=False)
+    ticks = value_ticks(
+        0.0, content.highest_hz, min(int((bottom - top) / (step + 9.0)), MOST_TICKS), logarithmic=False
+    )
     left = tick_room([tick_text(one) for one in ticks], text_scale)
     names = [one.label for one in content.orders if _end(content, one) <= content.highest_hz]
     names += [mode_text(one) for one in content.modes]

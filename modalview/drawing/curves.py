@@ -6,6 +6,7 @@ from modalview.drawing.primitives import Floats
 
 # Pieces that dashes are put together from, pixels.
 _PIECE = 1.5
+_LEVEL = 1e-9  # pixels: a segment that changes by less is level
 # Values beyond what can be drawn stand so many pixels outside of the chart.
 FAR = 1e5
 
@@ -32,10 +33,11 @@ def clipped(segments: Floats, box: tuple[float, float, float, float]) -> Floats:
     outside = np.zeros(len(segments), dtype=bool)
     for axis, (low, high) in enumerate(((box[0], box[2]), (box[1], box[3]))):
         for way, room in ((-step[:, axis], start[:, axis] - low), (step[:, axis], high - start[:, axis])):
-            share = np.divide(room, way, out=np.zeros_like(room), where=way != 0)
-            enter = np.where(way < 0, np.maximum(enter, share), enter)
-            leave = np.where(way > 0, np.minimum(leave, share), leave)
-            outside |= (way == 0) & (room < 0)
+            crosses = np.abs(way) > _LEVEL
+            share = np.divide(room, way, out=np.zeros_like(room), where=crosses)
+            enter = np.where(crosses & (way < 0), np.maximum(enter, share), enter)
+            leave = np.where(crosses & (way > 0), np.minimum(leave, share), leave)
+            outside |= ~crosses & (room < 0)
     kept = ~outside & (enter < leave)
     start, step, enter, leave = start[kept], step[kept], enter[kept, None], leave[kept, None]
     return np.hstack([start + enter * step, start + leave * step])

@@ -24,6 +24,7 @@ from modalview.drawing.primitives import (
 from modalview.drawing.responsechartcontent import ResponseContent, Series
 from modalview.drawing.responsecharttable import at_speed, figure, worst_of
 from modalview.drawing.speedaxes import (
+    MOST_TICKS,
     SpeedFrame,
     axes_items,
     right_room,
@@ -73,6 +74,7 @@ def response_chart(
     *,
     text_scale: float = 1.0,
     logarithmic: bool = False,
+    titled: bool = True,
 ) -> ResponseChart:
     """Draw a response chart.
 
@@ -84,8 +86,10 @@ def response_chart(
     text_scale : float
     logarithmic : bool
         Amplitudes by their logarithm, over four decades at most.
+    titled : bool
+        Whether what is shown where stands above; damping and unit always do.
     """
-    head, reached = _head(content, width, text_scale)
+    head, reached = _head(content, width, text_scale, titled=titled)
     frame = _frame(content, (width, height), reached, text_scale, logarithmic=logarithmic)
     names = _Names(frame, content, (width, height), text_scale)
     items = _ranges(frame, content) + axes_items(frame, content.unit, text_scale)
@@ -128,13 +132,19 @@ def stops(content: ResponseContent) -> tuple[float, ...]:
     return tuple(sorted(rpm for rpm in found if low <= rpm <= high))
 
 
-def _head(content: ResponseContent, width: float, text_scale: float) -> tuple[tuple[Item, ...], float]:
+def _head(
+    content: ResponseContent, width: float, text_scale: float, *, titled: bool
+) -> tuple[tuple[Item, ...], float]:
     """Write what is shown, the damping and the legend; return where the chart may begin."""
     step = line_height(Size.SMALL, text_scale=text_scale)
-    title = f"{content.quantity} of {content.place}, {content.unit}"
-    y = 4.0 + step / 2
-    items: list[Item] = [Text(8.0, y, title, Role.INK, Size.SMALL, bold=True)]
-    damping = f"Damping: {content.damping}" if content.damping else ""
+    y = 4.0 - step / 2
+    items: list[Item] = []
+    if titled:
+        y += step
+        title = f"{content.quantity} of {content.place}, {content.unit}"
+        items.append(Text(8.0, y, title, Role.INK, Size.SMALL, bold=True))
+    named = content.damping.lower().startswith("damping")
+    damping = content.damping if named or not content.damping else f"Damping: {content.damping}"
     rows = wrapped(damping, width - 20.0, text_scale) if damping else []
     for row in rows[:_MOST_DAMPING]:
         y += step
@@ -190,7 +200,9 @@ def _frame(
         low, high = max(low, 0.7 * least), high * 1.6
     top, bottom = reached + step + 8.0, size[1] - step - 10.0
     bottom = max(bottom, top + 40.0)
-    ticks = value_ticks(low, high, int((bottom - top) / (step + 9.0)), logarithmic=logarithmic)
+    ticks = value_ticks(
+        low, high, min(int((bottom - top) / (step + 9.0)), MOST_TICKS), logarithmic=logarithmic
+    )
     left = tick_room([tick_text(one) for one in ticks], text_scale)
     speeds = content.speeds_rpm
     right = size[0] - right_room(float(speeds[-1]), text_scale)
@@ -334,13 +346,13 @@ def _peaks(frame: SpeedFrame, content: ResponseContent, names: _Names) -> tuple[
         if number >= MOST_PEAKS:
             continue
         text = (
-            f"unbounded at {rpm_text(one.rpm)} rpm: nothing damps it"
+            f"without bound at {rpm_text(one.rpm)} rpm: nothing damps it"
             if infinite
             else f"{figure(one.value)} at {rpm_text(one.rpm)} rpm"
         )
         spots = [
             Spot(x + right * 9.0, y + down, right, 0)
-            for down in (2.0, -step * 0.6, step, 2 * step, 3 * step, 4 * step)
+            for down in (2.0, *(share * step for share in (-0.6, 1.0, -1.6, 2.0, -2.6, 3.0, 4.0)))
             for right in (1, -1)
         ]
         items += names.write((Line(text, Role.BAD if infinite else Role.ACCENT, Size.SMALL),), spots)

@@ -21,7 +21,7 @@ from modalview.study.response_results import (
 
 FORCE = "force peak"
 SHOWN = (*QUANTITIES, FORCE)
-SUM = "sum of the amplitudes"
+SUM = "all, summed"
 
 # (per SI, unit with rms or peak) of a quantity in each system; then of what turns.
 _UNITS: dict[str, dict[str, tuple[float, str]]] = {

@@ -51,14 +51,14 @@ class ResponseTable:
     rows: tuple[ResponseRow, ...]
 
 
-NO_STEADY = "unbounded"
+NO_STEADY = "without bound"
 
 
 def figure(value: float) -> str:
     """Write an amplitude; infinite is said, never a number.
 
     >>> figure(6.7123), figure(float("inf"))
-    ('6.71', 'unbounded')
+    ('6.71', 'without bound')
     """
     return significant(value, FIGURES) if np.isfinite(value) else NO_STEADY
 

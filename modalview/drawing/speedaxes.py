@@ -13,6 +13,7 @@ from modalview.drawing.textsize import line_height, text_width
 RPM_PER_HZ = 60.0
 _TICK = 4.0  # pixels
 _APART_ACROSS, _APART_UP = 26.0, 9.0  # least room between tick texts, pixels
+MOST_TICKS = 12
 _DECADE = (1.0, 2.0, 5.0)
 
 
@@ -155,7 +156,8 @@ def right_room(high_rpm: float, text_scale: float) -> float:
 
 def most_ticks(frame: SpeedFrame, text_scale: float) -> int:
     """Return how many tick texts stand above each other without crowding."""
-    return int((frame.bottom - frame.top) / (line_height(Size.SMALL, text_scale=text_scale) + _APART_UP))
+    step = line_height(Size.SMALL, text_scale=text_scale) + _APART_UP
+    return min(int((frame.bottom - frame.top) / step), MOST_TICKS)
 
 
 def _hertz(frame: SpeedFrame, head: float, taken: float, text_scale: float) -> list[Item]:
@@ -199,12 +201,13 @@ def struck(
 
 
 def rpm_text(rpm: float) -> str:
-    """Write a speed to five figures with thousands apart.
+    """Write a speed to five figures, one after the point at most, with thousands apart.
 
-    >>> rpm_text(2950.0), rpm_text(1230.456)
-    ('2 950', '1 230.5')
+    >>> rpm_text(2950.0), rpm_text(1230.456), rpm_text(406.662), rpm_text(0.5123)
+    ('2 950', '1 230.5', '406.7', '0.51')
     """
     rounded = float(f"{rpm:.5g}")
     whole = math.floor(abs(rounded))
-    rest = f"{abs(rounded) - whole:.{max(0, 5 - len(str(whole)))}f}"[1:].rstrip("0").rstrip(".")
+    figures = min(max(0, 5 - len(str(whole))), 1 if whole else 2)
+    rest = f"{abs(rounded) - whole:.{figures}f}"[1:].rstrip("0").rstrip(".")
     return ("−" if rounded < 0 else "") + f"{whole:,}".replace(",", " ") + rest

@@ -18,6 +18,7 @@ from modalview.places import resources
 from modalview.ui import settings as names
 from modalview.ui.analysis import Analysis
 from modalview.ui.banner import Banner
+from modalview.ui.charts import NAMES, Charts
 from modalview.ui.dialogs import ReadingDialog
 from modalview.ui.document import Document
 from modalview.ui.examples import bundled_examples, first_of_each
@@ -29,7 +30,7 @@ from modalview.ui.planeview import PlaneView
 from modalview.ui.playbar import PlayBar, speed_of
 from modalview.ui.reasons import Reasons
 from modalview.ui.results import Results
-from modalview.ui.rooms import THREE_COLUMNS, Rooms
+from modalview.ui.rooms import HALF, THREE_COLUMNS, Rooms
 from modalview.ui.scale import ScalePanel
 from modalview.ui.settings import Setting, Settings, settings_text
 from modalview.ui.settingsdialog import SettingsDialog
@@ -42,6 +43,7 @@ from modalview.ui.welcome import Welcome
 
 _SIZE = (1280, 800)
 _ZOOM = 1.25
+CHARTS_SHARE = 0.58
 _LEAST_SIZE = (640, 440)
 _PHASE_STEP = FULL_TURN / 24
 
@@ -95,6 +97,7 @@ class Frame(QMainWindow):
             ("values", "Values", PartTablePage(self.parts, self)),
         ):
             self.below.add(name, title, place)
+        self.charts = Charts(self.below, self)
         self.below.offer("damped", there=False)
         self.rooms = Rooms(self._drawing(), self.below, (self.scale, self.results), self)
         self.side = self.rooms.side
@@ -117,8 +120,8 @@ class Frame(QMainWindow):
     # Room
 
     def give_room(self, name: str) -> None:
-        """Give the complex plane half of the height while it is shown."""
-        self.rooms.give_half(wanted=name == "plane")
+        """Give the complex plane half of the height while it is shown, charts with their controls more."""
+        self.rooms.give_half(wanted=name in ("plane", *NAMES), much=CHARTS_SHARE if name in NAMES else HALF)
 
     def resizeEvent(self, event: QResizeEvent) -> None:  # noqa: N802  (Qt's name)
         """Let places share tabs where there is no room for all of them."""
@@ -151,6 +154,7 @@ class Frame(QMainWindow):
         self.modes.set_theme(theme)
         self.damped.set_theme(theme)
         self.plane.canvas.set_theme(theme, percent / 100)
+        self.charts.set_theme(theme, percent / 100)
         self.results.set_theme(theme)
         self.parts.lines.set_theme(theme)
         self.parts.fit_columns()
@@ -224,6 +228,22 @@ class Frame(QMainWindow):
         """Give the keyboard to the complex plane."""
         self.below.show_page("plane")
         self.plane.setFocus()
+
+    def on_go_to_response(self) -> None:
+        """Give the keyboard to the response chart."""
+        self._go_to_chart("response")
+
+    def on_go_to_speeds(self) -> None:
+        """Give the keyboard to the chart of speeds."""
+        self._go_to_chart("speeds")
+
+    def on_go_to_mounts(self) -> None:
+        """Give the keyboard to the sketch of the mounts."""
+        self._go_to_chart("mounts")
+
+    def _go_to_chart(self, name: str) -> None:
+        self.below.show_page(name)
+        self.charts.pages[name].setFocus()
 
     def on_go_to_results(self) -> None:
         """Give the keyboard to the first field of the results."""

@@ -77,7 +77,7 @@ def window_picture(file: Path | None, path: Path, look: Look) -> None:
                 if failures:
                     raise failures[0]
                 _arrange(window, look)
-            wait_for(program, lambda: True)
+            wait_for(program, lambda: not window.charts.busy)
             if not window.grab().save(str(path)):
                 raise InputError(f"{path} cannot be written as a picture; is the folder there?")
         finally:

@@ -126,7 +126,8 @@ class PlayBar(QFrame):
         self._there = mode is not None
         if mode is not None:
             old = "" if current else " (out of date)"
-            self.name.setText(f"mode {mode.number} · {frequency_text(mode)}{old}")
+            caption = getattr(mode, "caption", "")  # of a response; modes have a number
+            self.name.setText(f"{caption or f'mode {mode.number} · {frequency_text(mode)}'}{old}")
         self._fit()
         self._follow()
 

@@ -27,6 +27,7 @@ RESULTS = _Span(0.24, 17.5, 26.0)
 SCALE = _Span(0.245, 20.0, 36.0)
 SIDE = _Span(0.42, 17.5, 44.0)  # scale or results under their tabs
 BELOW = _Span(0.335, 13.5, 22.0)
+HALF = 0.5
 SHARED = ("scale", "results")
 _TITLES = {"scale": "Scale", "results": "Results"}
 
@@ -52,7 +53,7 @@ class Rooms(QSplitter):
         self._dragged = {self: False, self._left: False}
         self.splitterMoved.connect(lambda *_: self._dragged.update({self: True}))
         self._left.splitterMoved.connect(lambda *_: self._dragged.update({self._left: True}))
-        self._line, self._half = 1, False
+        self._line, self._half, self._much = 1, False, HALF
 
     @property
     def drawing(self) -> QRect:
@@ -90,10 +91,10 @@ class Rooms(QSplitter):
             if pages.has(name):
                 pages.show_page(name)
 
-    def give_half(self, *, wanted: bool) -> None:
-        """Give what lies under the sheet half of the height."""
-        if wanted != self._half:
-            self._half = wanted
+    def give_half(self, *, wanted: bool, much: float = HALF) -> None:
+        """Give what lies under the sheet half of the height, or so much of it."""
+        if (wanted, much) != (self._half, self._much):
+            self._half, self._much = wanted, much
             self._fit()
 
     def resizeEvent(self, event: object) -> None:  # noqa: N802  (Qt's name)
@@ -116,7 +117,7 @@ class Rooms(QSplitter):
             self.setSizes(self._in_order(max(wide - results - scale - side, 1), scale, results, side))
         if not self.below.has("sheet") and (self._half or not self._dragged[self._left]):
             high = self._left.height()
-            below = high // 2 if self._half else BELOW.of(high, self._line)
+            below = round(self._much * high) if self._half else BELOW.of(high, self._line)
             self._left.setSizes([max(high - below, 1), below])
 
     def _in_order(self, left: int, scale: int, results: int, side: int) -> list[int]:

@@ -65,6 +65,7 @@ class Window(Frame):
         self._patience = QTimer(self, singleShot=True, interval=_BLINK_MS)
         self._connect()
         self.sketching = Sketching(self)  # hears of a change after the sheet was told
+        self.sketching.hand.chosen_changed.connect(self.charts.on_chosen)
         self.viewing = Viewing(self)
         self._recall()
         self.show_document()
@@ -88,6 +89,9 @@ class Window(Frame):
         self.modes.mode_chosen.connect(self.on_mode_chosen)
         self.damped.mode_chosen.connect(self.on_mode_chosen)
         self.below.shown.connect(self.on_page_shown)
+        self.charts.failed.connect(self.on_failed)
+        self.charts.response.motion_changed.connect(self._show_motion)
+        self.charts.response.magnitude_asked.connect(self._ask_magnitude)
         self.parts.told.connect(lambda words: self.statusBar().showMessage(words, _TOLD_MS))
         self.play_bar.moving_changed.connect(self.on_move)
         self.play_bar.speed_changed.connect(self.on_speed)
@@ -195,6 +199,7 @@ class Window(Frame):
         self.parts.show_model(model, anew=anew, system=self.system_of_units())
         self.results.show_model(model, self.system_of_units())
         self.analysis.follow(model)
+        self.charts.show_model(model, self.system_of_units(), anew=anew)
 
     def system_of_units(self) -> str:
         """Return the system of units that values are shown in."""
@@ -207,6 +212,7 @@ class Window(Frame):
             self.parts.show_model(self.document.model, anew=False, system=self.system_of_units())
             self.results.show_model(self.document.model, self.system_of_units())
             self.sketching.show_units(self.system_of_units())
+            self.charts.set_system(self.system_of_units())
 
     def _show_title(self, checked: str, freedoms: int) -> None:
         from modalview.drawing import furniture  # noqa: PLC0415  (numpy comes after the first paint)
@@ -262,6 +268,7 @@ class Window(Frame):
         rows = {"modes": self.modes.row, "damped": self.damped.row}
         if name in rows:
             self.on_mode_chosen(rows[name].chosen())
+        self._show_motion()
         self._show_proof()
 
     def _show_proof(self) -> None:
@@ -273,12 +280,26 @@ class Window(Frame):
 
     def on_mode_chosen(self, mode: Any) -> None:
         """Move the chosen mode on the sheet."""
-        if self.sender() is self.modes and self.below.current() == "damped":
-            return  # new natural modes came in while a damped one is shown
+        if self.sender() is self.modes and self.below.current() in ("damped", "response"):
+            return  # new natural modes came in while a damped one or a response is shown
         self.sheet.show_mode(mode)
         self._show_play_bar()
 
+    def _show_motion(self) -> None:
+        """Move the response at the speed chosen, while its chart is in sight."""
+        if self.charts.motion is not None:
+            self.on_mode_chosen(self.charts.motion)
+
+    def _ask_magnitude(self, machine: str) -> None:
+        if machine:
+            self.sketching.change_machine(machine)
+        else:
+            self.sketching.add_force()
+
     def _show_play_bar(self) -> None:
+        if self.sheet.mode is not None and self.sheet.mode is self.charts.motion:
+            self.play_bar.show_mode(self.sheet.mode, current=self.charts.response.inquiry.current)
+            return
         damped = self.sheet.mode is not None and is_damped(self.sheet.mode)
         current = self.analysis.damped_current if damped else self.analysis.solution_current
         self.play_bar.show_mode(self.sheet.mode, current=current)
@@ -430,6 +451,7 @@ class Window(Frame):
         self._worker.close()
         for place in (self.sheet, self.parts.lines, self.modes.row.card, self.damped.row.card):
             place.close_threads()
+        self.charts.close_threads()
         self.closed.emit()
         super().closeEvent(event)
 
