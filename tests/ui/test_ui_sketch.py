@@ -87,6 +87,20 @@ def test_escape_leaves_off_first_the_drag_then_the_tool_then_what_is_chosen(sket
     assert sketch.window.sketching.hand.kind.name == "choose"
 
 
+def test_undo_goes_back_from_within_the_form_while_nothing_is_being_typed(sketch):
+    sketch.tool("M")
+    sketch.drag(sketch.at(-0.5, 1.0), sketch.at(0.5, 1.4))
+    sketch.type("620 kg")
+    sketch.key(Qt.Key.Key_Z, CTRL)  # the mass that was typed
+    assert model(sketch).bodies[0].mass.source == STARTING
+    sketch.type_on("3 %")
+    sketch.key(Qt.Key.Key_Z, CTRL)  # what is being typed here
+    assert len(model(sketch).bodies) == 1
+    sketch.key(Qt.Key.Key_Escape)
+    sketch.key(Qt.Key.Key_Z, CTRL)
+    assert model(sketch).bodies == ()
+
+
 def test_numbers_typed_over_a_drag_hold_whatever_the_pointer_does(sketch):
     sketch.tool("M")
     sketch.drag(sketch.at(-0.5, 1.0), sketch.at(0.5, 1.4), let_go=False)

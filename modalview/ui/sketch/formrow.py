@@ -2,8 +2,8 @@
 
 from collections.abc import Callable
 
-from PySide6.QtCore import Qt, Signal
-from PySide6.QtGui import QFocusEvent, QKeyEvent
+from PySide6.QtCore import QEvent, Qt, Signal
+from PySide6.QtGui import QFocusEvent, QKeyEvent, QKeySequence
 from PySide6.QtWidgets import QComboBox, QGridLayout, QLabel, QLineEdit, QWidget
 
 from modalview.model.forms import FormLine
@@ -69,6 +69,16 @@ class TypedLine(QLineEdit):
     def _on_enter(self) -> None:
         if self.enter():
             self.gone_on.emit()
+
+    def event(self, event: QEvent) -> bool:
+        """Leave undo and redo to the window while nothing is being typed here."""
+        asked = event.type() == QEvent.Type.ShortcutOverride and isinstance(event, QKeyEvent)
+        if asked and not self.isModified():
+            keys = QKeySequence.StandardKey
+            if event.matches(keys.Undo) or event.matches(keys.Redo):
+                event.ignore()
+                return False
+        return super().event(event)
 
     def focusOutEvent(self, event: QFocusEvent) -> None:  # noqa: N802  (Qt's name)
         """Take what was typed when the keyboard goes elsewhere in the window."""
