@@ -58,6 +58,7 @@ def _row(one: Passage, *, timed: bool) -> list[str]:
 
 
 def _haste(one: Passage) -> str:
+    """Return how a mode is passed: "7.0 cycles in 0.14 s: fast"."""
     if one.cycles is None or one.seconds is None:
         return "no damping given"
     word = "slow" if one.quasi_steady else "fast"
@@ -68,20 +69,22 @@ def run_up_document(passed: Sequence[Passage] | None) -> list[dict[str, Any]] | 
     """Return the modes passed on run-up for JSON; null where not all modes are known."""
     if passed is None:
         return None
-    return [
-        {
-            "check": one.check,
-            "mode": one.mode,
-            "speed_rpm": one.speed / RPM,
-            "range_rpm": rpm_pair(one.speeds),
-            "at_nominal": one.at_nominal,
-            "damping_ratio": one.damping_ratio,
-            "half_power_s": one.seconds,
-            "half_power_cycles": one.cycles,
-            "quasi_steady": one.quasi_steady,
-        }
-        for one in passed
-    ]
+    return [passage_document(one) for one in passed]
+
+
+def passage_document(one: Passage) -> dict[str, Any]:
+    """Return one mode passed on run-up for JSON."""
+    return {
+        "check": one.check,
+        "mode": one.mode,
+        "speed_rpm": one.speed / RPM,
+        "range_rpm": rpm_pair(one.speeds),
+        "at_nominal": one.at_nominal,
+        "damping_ratio": one.damping_ratio,
+        "half_power_s": one.seconds,
+        "half_power_cycles": one.cycles,
+        "quasi_steady": one.quasi_steady,
+    }
 
 
 def rpm_pair(speeds: tuple[float, float]) -> list[float]:

@@ -44,6 +44,8 @@ Array = npt.NDArray[np.float64]
 SLOWEST, FASTEST = 0.1, 1.3
 # From standstill they start at this share of the highest speed.
 FROM_STANDSTILL = 0.02
+# Errors are not told below this: rounding differs from one processor to the next.
+LEAST_TOLD = 1e-14
 
 SUM_NOTE = (
     "The sum adds the amplitudes of all excitations: phases between orders are not known, so it is never "
@@ -108,7 +110,7 @@ def respond(request: ResponseRequest, solution: Solution | None = None) -> Respo
     if not found:
         raise ModelFaultsError(tuple(Fault(one.id, one.reason) for one in left_out))
     method = dynamics.with_damping().method
-    residual_text = f"largest backward error of the equations of motion {worst:.0e}"
+    residual_text = f"largest backward error of the equations of motion {max(worst, LEAST_TOLD):.0e}"
     return ResponseResult(
         request=request,
         damping=_damping_used(dynamics),
@@ -176,7 +178,8 @@ def _machine_response(
     transmissions: tuple[Transmission, ...] = ()
     forces: tuple[ForceCurve, ...] = ()
     if running is not None:
-        swept = sweeper.sweep(_span(request, running), wanted_speeds(machine))
+        asked = [rpm * RAD_PER_RPM for rpm in request.speeds_rpm]
+        swept = sweeper.sweep(_span(request, running), [*wanted_speeds(machine), *asked])
         speeds = swept.speeds
         curves = curves_of(sweeper, swept, names)
         pairs = [(one.push, one.at) for one in taken]
@@ -213,7 +216,8 @@ def _span(request: ResponseRequest, running: tuple[float, float]) -> tuple[float
     if request.span_rpm is not None:
         return request.span_rpm[0] * RAD_PER_RPM, request.span_rpm[1] * RAD_PER_RPM
     low, high = running
-    return max(SLOWEST * low, FROM_STANDSTILL * high), FASTEST * high
+    asked = [rpm * RAD_PER_RPM for rpm in request.speeds_rpm]
+    return min([max(SLOWEST * low, FROM_STANDSTILL * high), *asked]), max([FASTEST * high, *asked])
 
 
 def _state_speeds(request: ResponseRequest, running: tuple[float, float] | None) -> Sequence[float | None]:
@@ -337,4 +341,4 @@ def _worst_balance(powers: Sequence[tuple[float, float]]) -> tuple[str, ...]:
     shares = [abs(fed - lost) / max(fed, lost) for fed, lost in powers if max(fed, lost) > 0 and lost > 0]
     if not shares:
         return ()
-    return (f"power fed in equals power lost to {max(shares):.0e} at the machine's speed",)
+    return (f"power fed in equals power lost to {max(*shares, LEAST_TOLD):.0e} at the machine's speed",)

@@ -19,7 +19,14 @@ SHOWN = [block for block in BLOCKS if block.startswith("$ keepclear ")]
 
 
 def test_readme_shows_output():
-    assert [block.split()[2] for block in SHOWN] == ["check", "bounds", "modes", "speeds", "mounts"]
+    assert [block.split()[2] for block in SHOWN] == [
+        "check",
+        "bounds",
+        "modes",
+        "speeds",
+        "response",
+        "mounts",
+    ]
 
 
 @pytest.mark.parametrize("block", SHOWN, ids=lambda block: block.split()[2])
@@ -28,7 +35,7 @@ def test_output_is_what_the_program_prints(block, capsys, monkeypatch):
     monkeypatch.chdir(ROOT)
     status = main(command.split()[2:])
     assert capsys.readouterr().out.strip() == output.strip()
-    assert status == (1 if command.split()[2] in {"check", "speeds"} else 0)
+    assert status == (1 if command.split()[2] in {"check", "speeds", "response"} else 0)
 
 
 def test_file_of_the_readme_opens_and_is_checked(tmp_path, capsys):
@@ -80,6 +87,7 @@ def test_functions_of_developers_md_stand_where_it_says():
 PUMP = ("demo_models/1-cooling-water-pump/as-built.keepclear",)
 DAMPED = ("demo_models/6-vacuum-pump-absorber/absorber-210kg-damped.keepclear",)
 TRAIN = ("demo_models/3-air-compressor-train/as-built.keepclear",)
+RETROFIT = ("demo_models/6-vacuum-pump-absorber/absorber-105kg.keepclear",)
 GENSET = ("demo_models/4-standby-generator-set/raised-mounts.keepclear",)
 MATRICES = ("--stiffness", "tests/data/mikota_20/K.mtx", "--mass", "tests/data/mikota_20/M.mtx")
 BAND = ("--frequencies", "1 Hz", "--margin", "3 %")
@@ -99,6 +107,7 @@ BAND = ("--frequencies", "1 Hz", "--margin", "3 %")
         ("modes", *MATRICES, "--near", "1 Hz", "--count", "1"),
         *(("speeds", file) for file in (*PUMP, *TRAIN)),
         ("mounts", *GENSET),
+        *(("response", file) for file in (*PUMP, *TRAIN, *RETROFIT)),
     ],
 )
 def test_every_key_of_the_documents_is_told(words, capsys, monkeypatch):
@@ -113,7 +122,15 @@ def _keys(item):
     """Yield the keys of a document; those of shapes and of shares by direction are names of the model."""
     for key, inner in item.items() if isinstance(item, dict) else ():
         yield key
-        if key not in {"shape", "shape_real", "shape_imag", "effective_mass", "tilt_rad"}:
+        if key not in {
+            "shape",
+            "shape_real",
+            "shape_imag",
+            "effective_mass",
+            "tilt_rad",
+            "motion_real",
+            "motion_imag",
+        }:
             yield from _keys(inner)
     for one in item if isinstance(item, list) else ():
         yield from _keys(one)
