@@ -26,6 +26,7 @@ PIVOT = 1e-3
 OPTIONS: dict[str, object] = {"SymmetricMode": True}
 # Without damping: ||D|| ||q|| / ||f|| from which a resonance is hit as exactly as rounding tells.
 BEYOND = 1e14
+NUDGE = 4 * np.finfo(float).eps
 
 
 @dataclass(frozen=True, slots=True, eq=False)
@@ -107,7 +108,7 @@ class BySparse:
         Raises
         ------
         NumericalError
-            D is singular: an undamped resonance was hit exactly.
+            D is singular though something damps the model.
         """
         found = np.empty((self.size, omega.size), dtype=complex)
         infinite = np.zeros((self.size, omega.size), dtype=complex) if self.undamped else None
@@ -115,13 +116,27 @@ class BySparse:
         factor, of = None, np.nan
         for column, w in enumerate(omega.tolist()):
             if factor is None or of != w:
-                matrix = self.dynamic(w)
-                factor, of = _factored(matrix, w), w
+                factor, of = self._factored(w), w
             right = self._right(w, load, follows)
             found[:, column] = factor.solve(right)
-            if infinite is not None and _unbounded(matrix, found[:, column], right):
+            if infinite is not None and self._unbounded(w, found[:, column], right):
                 infinite[:, column], found[:, column] = found[:, column], 0.0
         return SteadyMotion(found, infinite)
+
+    def _factored(self, omega: float) -> "SuperLU":
+        try:
+            return _factored(self.dynamic(omega), omega)
+        except NumericalError:
+            if not self.undamped:
+                raise
+            # Exactly at a resonance: a few roundings beside it the motion is beyond all bounds, and told so.
+            return _factored(self.dynamic(omega * (1 + NUDGE)), omega)
+
+    def _unbounded(self, omega: float, found: ComplexArray, right: ComplexArray) -> bool:
+        """Return whether a motion is beyond what rounding leaves of a nonsingular matrix."""
+        entries = np.abs(self.stiff) + omega**2 * np.abs(self.mass)
+        largest = float(np.bincount(self.indices, entries, minlength=self.size).max())
+        return bool(np.linalg.norm(found) * largest > BEYOND * np.linalg.norm(right))
 
     @property
     def size(self) -> int:
@@ -157,12 +172,6 @@ def _factored(matrix: sp.csc_array, omega: float) -> "SuperLU":
             f"The equations of motion have no solution at {omega / (2 * np.pi):.6g} Hz: an undamped "
             "resonance is hit exactly, or a part is free. Give the model damping, or another speed."
         ) from error
-
-
-def _unbounded(matrix: sp.csc_array, found: ComplexArray, right: ComplexArray) -> bool:
-    """Return whether a solution is beyond what rounding leaves of a nonsingular matrix."""
-    largest = float(abs(matrix).sum(axis=0).max())
-    return bool(np.linalg.norm(found) * largest > BEYOND * np.linalg.norm(right))
 
 
 def _ones(matrix: sp.csc_array) -> sp.csc_array:

@@ -1,6 +1,6 @@
 """Steady motion from first-order states: superposed roots where they are well apart, else solves."""
 
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 
 import numpy as np
 import numpy.typing as npt
@@ -18,6 +18,9 @@ ComplexArray = npt.NDArray[np.complex128]
 
 # Superposition loses as many digits as the condition of the roots' vectors has; beyond, systems are solved.
 WELL_APART = 1e5
+# Roots err by the rounding of the whole matrix: they are superposed where that is so small against the lowest
+# oscillation, as it is not beside very fast decays.
+FINE = 1e-12
 # A decay below this many roundings of the matrix is none.
 UNDAMPED = 64.0
 # A share of the load that an undamped root takes below this is rounding.
@@ -64,9 +67,16 @@ class ByStates:
                 raise NumericalError("QR iteration on the state matrix did not converge.") from error
             vectors = vectors.astype(complex)
             size = np.linalg.svd(vectors, compute_uv=False)
-            if size.size == 0 or size[-1] * WELL_APART > size[0]:
+            turning = np.abs(roots[roots.imag > UNDAMPED * rounding])
+            fine = rounding <= FINE * turning.min(initial=np.inf)
+            if size.size == 0 or (fine and size[-1] * WELL_APART > size[0]):
                 return cls(states, roots.astype(complex), vectors, la.lu_factor(vectors), None, rounding)
             return cls(states, roots.astype(complex), vectors, None, reduced(matrix), rounding)
+
+    def unsuperposed(self) -> "ByStates":
+        """Return the same with a system solved at each frequency."""
+        with one_blas_thread():
+            return replace(self, factor=None, hessenberg=reduced(self.states.matrix))
 
     @property
     def method(self) -> str:
