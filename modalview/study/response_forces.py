@@ -165,7 +165,8 @@ def forces_over(
             passed.append(pressing.passed_on(push, omega[part], motion, at))
             if push.based:
                 ones = np.ones_like(omega[part])
-                ratios.append(np.array([one.point.amplitude(motion, ones) for one in points]))
+                rows = [one.point.amplitude(motion, ones) for one in points]
+                ratios.append(np.array(rows).reshape(len(points), ones.size))
             if wide:
                 both = pressing.resultants(push, omega[part], motion)
                 links.append(both[0])

@@ -12,6 +12,9 @@ from modalview.response.quantities import Point, point_at
 from modalview.study.response_results import LeftOut, ResponseRequest, Watch
 from modalview.units.parse import read
 
+# Bodies looked at when a support moves and nobody said where to look.
+MOST_BODIES = 6
+
 
 @dataclass(frozen=True, slots=True, eq=False)
 class Watched:
@@ -43,7 +46,9 @@ def watched_points(
     model = request.model
     watches = list(request.watches)
     if not watches:
-        watches = _unique(model, [_at_excitation(one) for one in machine.excitations if one.at])
+        watches = _unique(
+            model, [place for one in machine.excitations for place in _at_excitation(model, one)]
+        )
     found = [Watched(one, point_at(assembly, terms, one.at, one.direction, one.label)) for one in watches]
     held, left_out = [], []
     for limit in model.limits:
@@ -61,11 +66,19 @@ def watched_points(
     return found, held, left_out
 
 
-def _at_excitation(excitation: Excitation) -> tuple[End, Direction | None]:
-    """Return where an excitation is looked at: along its force, in any direction where it turns."""
+def _at_excitation(model: Model, excitation: Excitation) -> list[tuple[End, Direction | None]]:
+    """Return where an excitation is looked at: along its force, in any direction where it turns.
+
+    Of the motion of a support: at the first bodies with mass.
+    """
+    if excitation.at is None:
+        return []
     turns = excitation.magnitude is not None and excitation.magnitude.torque is not None
     along = None if turns or excitation.direction == "rotating" else excitation.direction
-    return excitation.at or End(), along
+    if excitation.at.support is None:
+        return [(excitation.at, along)]
+    heavy = [one.id for one in model.bodies if one.mass is not None and one.mass.si > 0]
+    return [(End(body=name), along) for name in heavy[:MOST_BODIES]]
 
 
 def _limit_value(model: Model, limit: Limit) -> float:

@@ -14,21 +14,22 @@ def test_every_case_of_the_checked_groups_is_checked():
         "B": 9,
         "C": 9,
         "D": 7,
-        "E": 8,
+        "E": 9,
+        "F": 12,
         "G": 10,
-        "I": 2,
+        "I": 3,
     }
 
 
 def test_the_cases_left_for_later_are_named():
     left = Counter(case["group"] for name, case in cases().items() if name not in checked())
-    assert left == {"E": 1, "F": 12, "H": 11, "I": 9}
+    assert left == {"H": 11, "I": 8}
     assert set(left) == set(LEFT_FOR_LATER)
-    assert set(ALSO_CHECKED) <= {name for name, case in cases().items() if case["group"] in "EI"}
+    assert set(ALSO_CHECKED) <= {name for name, case in cases().items() if case["group"] == "I"}
 
 
 def test_every_expected_figure_of_the_checked_cases_is_a_test():
-    asked = [figure.id for group in "ABCDEGI" for figure in figures(group)]
+    asked = [figure.id for group in "ABCDEFGI" for figure in figures(group)]
     wanted = [f"{name}-{one['name']}" for name in checked() for one in cases()[name]["expected"]]
     assert sorted(asked) == sorted(wanted)
     assert len(set(asked)) == len(asked)

@@ -153,7 +153,11 @@ OWN = {
 }
 
 
-@pytest.mark.parametrize("figure", figures("E"), ids=lambda figure: figure.id)
+# E12 is steady motion with a loss factor: test_reference_response.
+FIGURES = [figure for figure in figures("E") if figure.case["id"] != "E12"]
+
+
+@pytest.mark.parametrize("figure", FIGURES, ids=lambda figure: figure.id)
 def test_figure(figure: Figure):
     if figure.id in OWN:
         figure.check(OWN[figure.id]())
@@ -162,4 +166,4 @@ def test_figure(figure: Figure):
 
 
 def test_every_figure_of_its_own_is_in_the_bank():
-    assert set(OWN) <= {figure.id for figure in figures("E")}
+    assert set(OWN) <= {figure.id for figure in FIGURES}

@@ -154,7 +154,11 @@ OWN = {
 OWN |= {f"I13-{rule}": partial(passes, rule) for rule in RULES}
 
 
-@pytest.mark.parametrize("figure", figures("I"), ids=lambda figure: figure.id)
+# I06, a balance grade, is among the excitations of test_reference_response.
+KEEP_OUT = [figure for figure in figures("I") if figure.case["id"] != "I06"]
+
+
+@pytest.mark.parametrize("figure", KEEP_OUT, ids=lambda figure: figure.id)
 def test_figure(figure: Figure):
     figure.check(OWN[figure.id]())
 
