@@ -17,7 +17,7 @@ Array = npt.NDArray[np.float64]
 ComplexArray = npt.NDArray[np.complex128]
 
 # Superposition loses as many digits as the condition of the roots' vectors has; beyond, systems are solved.
-WELL_APART = 1e5
+WELL_APART = 1e3
 # Roots err by the rounding of the whole matrix: they are superposed where that is so small against the lowest
 # oscillation, as it is not beside very fast decays.
 FINE = 1e-12

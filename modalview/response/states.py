@@ -28,7 +28,8 @@ class Undamped:
     Parameters
     ----------
     omega : array (m,)
-        Angular frequencies, rad/s; rounding beside the largest where a motion stretches nothing.
+        Angular frequencies, rad/s; where a motion stretches nothing zero, or (beside creeping coordinates)
+        rounding of the largest.
     inertial : array (inertial, m)
         M-orthonormal shapes.
     following : array (static, m)
@@ -121,6 +122,8 @@ def undamped_part(terms: DampedTerms) -> Undamped:
         stretch, omega, turned = np.linalg.svd(rest, full_matrices=False)
     except np.linalg.LinAlgError as error:
         raise NumericalError("The singular values of the stiffness terms did not converge.") from error
+    if terms.creeping == 0:
+        omega[omega.size - terms.free.shape[1] :] = 0.0  # rigid-body motions, known from structure
     shapes = turned.T
     following = (
         -la.solve_triangular(triangle, basis.T @ g @ shapes) if static.shape[1] else np.zeros((0, g.shape[1]))

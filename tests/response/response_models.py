@@ -192,7 +192,7 @@ class Judge:
             _, s, turned = np.linalg.svd(self.B)
             rank = int(np.sum(s > 1e-9 * s[0]))
             allowed = turned[rank:].T
-        felt = allowed.T @ (np.abs(self.M) + np.abs(self.K.real) / 1e6 + self.C / 1e3) @ allowed
+        felt = allowed.T @ (self.M + self.K.real / 1e6 + self.C / 1e3) @ allowed
         values, vectors = np.linalg.eigh((felt + felt.T) / 2)
         return allowed @ vectors[:, values > 1e-9 * values[-1]]
 
