@@ -25,8 +25,10 @@ NO_PEAK = 1e-9
 # A bracket is small enough when its ends lie below its middle by this share: the top of the parabola through
 # them is then known to a hundredth of their distance.
 FLAT = 1e-9
+# Values that differ by less than this share of themselves are on a level.
+LEVEL = 1e-12
 # Speeds nearer than this share of themselves are one.
-NARROW, CLOSE = 1e-13, 1e-6
+NARROW, CLOSE = 1e-12, 1e-6
 STEPS = 40
 ROOT_HALF = np.sqrt(0.5)
 
@@ -78,15 +80,30 @@ def starting_speeds(
         Machine speeds, edges of barred ranges.
     """
     low, high = span
-    found = [np.linspace(low, high, points), np.asarray(wanted, dtype=float)]
+    even, asked = np.linspace(low, high, points), np.asarray(wanted, dtype=float)
+    # An even speed that is a wanted one but for rounding would stand beside it.
+    apart = np.abs(even[:, None] - asked).min(axis=1, initial=np.inf)
+    found = [even[apart > CLOSE * even], asked]
     inside = [one for one in resonances if low * 0.5 <= one[0] <= high * 2]
     about = ABOUT if len(inside) <= MANY else COARSE
     for speed, width, undamped in inside:
         steps = speed * ABOUT_UNDAMPED if undamped else width * about
         found += [speed - steps, speed + steps]
-    every = np.unique(np.concatenate(found))
+    every = _told_apart(np.unique(np.concatenate(found)), asked)
     kept: Array = every[(every >= low) & (every <= high)]
     return kept
+
+
+def _told_apart(speeds: Array, wanted: Array) -> Array:
+    """Leave out speeds that are the one before them but for rounding; of two, a wanted one stays."""
+    kept: list[float] = []
+    for speed in speeds.tolist():
+        if kept and speed - kept[-1] <= NARROW * speed:
+            if kept[-1] not in wanted:
+                kept[-1] = speed
+            continue
+        kept.append(speed)
+    return np.array(kept)
 
 
 def swept(evaluate: Evaluate, speeds: Array, sharp: Array | None = None) -> Swept:
@@ -110,8 +127,8 @@ def swept(evaluate: Evaluate, speeds: Array, sharp: Array | None = None) -> Swep
     values = evaluate(speeds)
     speeds, values = _filled(evaluate, speeds, values)
     rows = np.arange(len(values)) if sharp is None else np.flatnonzero(sharp)
-    row, middle = _maxima(values, rows)
-    place, height = _placed(evaluate, row, Brackets.about(speeds, values, row, middle))
+    row, around = _maxima(values, rows)
+    place, height = _placed(evaluate, row, Brackets(speeds[around], values[row[:, None], around]))
     new = np.setdiff1d(place, speeds)
     if new.size:
         speeds, values = _merged(speeds, values, new, evaluate(new))
@@ -146,13 +163,34 @@ def _merged(speeds: Array, values: Array, new: Array, beside: Array) -> tuple[Ar
 
 
 def _maxima(values: Array, rows: Places) -> tuple[Places, Places]:
-    """Return rows and columns of the finite inner maxima."""
+    """Return the row (m,) of each finite inner maximum and the columns left of it, at it, right of it (m, 3).
+
+    Neighbours on a level with it but for rounding, where two speeds nearly coincide, are passed over.
+    """
     here = values[rows]
     middle, left, right = here[:, 1:-1], here[:, :-2], here[:, 2:]
     finite = np.isfinite(middle) & np.isfinite(left) & np.isfinite(right)
     high = np.where(np.isfinite(here), here, 0.0).max(axis=1, initial=0.0, keepdims=True)
     row, column = np.nonzero(finite & (middle > left) & (middle >= right) & (middle > NO_PEAK * high))
-    return rows[row], column + 1
+    found: dict[tuple[int, int, int], int] = {}
+    for r, c in zip(rows[row].tolist(), (column + 1).tolist(), strict=True):
+        low, top = _lower(values[r], c, -1), _lower(values[r], c, 1)
+        if low is not None and top is not None:
+            found.setdefault((r, low, top), c)
+    if not found:
+        return np.zeros(0, dtype=np.intp), np.zeros((0, 3), dtype=np.intp)
+    at = np.array([(r, low, c, top) for (r, low, top), c in found.items()], dtype=np.intp)
+    return at[:, 0], at[:, 1:]
+
+
+def _lower(values: Array, start: int, step: int) -> int | None:
+    """Return the next place clearly below a maximum; None when the row rises above it, or ends, before."""
+    i = start + step
+    while 0 <= i < values.size and np.isfinite(values[i]) and values[i] <= values[start] * (1 + LEVEL):
+        if values[i] < values[start] * (1 - LEVEL):
+            return i
+        i += step
+    return None
 
 
 def _endless(speeds: Array, values: Array) -> list[float]:
@@ -167,12 +205,6 @@ class Brackets:
 
     x: Array
     y: Array
-
-    @classmethod
-    def about(cls, speeds: Array, values: Array, row: Places, middle: Places) -> "Brackets":
-        """Take the neighbours of maxima on a grid."""
-        around = middle[:, None] + np.array([-1, 0, 1])
-        return cls(speeds[around], values[row[:, None], around])
 
     def tops(self) -> Array:
         """Return the top of the parabola through 1/y^2 (exact for one lightly damped mode), inside."""

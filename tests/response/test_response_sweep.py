@@ -74,6 +74,23 @@ def test_wanted_speeds_are_there_and_none_outside_the_span():
     assert speeds.max() == 2.0
 
 
+def test_two_speeds_that_nearly_coincide_make_no_peak_and_hide_none():
+    """Beside 1 the curve's values differ by rounding only; the peak of the displacement per w^2 is above it."""
+    rows = oscillator(0.0625)
+    twice = np.sort(
+        np.concatenate([np.linspace(0.2, 3.0, 40), [1.0, 1.0 + 3e-16, 1.0 + 9e-16, 2.0, 2.0 + 5e-16]])
+    )
+    found = swept(rows, twice)
+    assert [top.row for top in found.tops] == [0, 1, 2]
+    assert found.tops[2].speed == pytest.approx(1 / np.sqrt(1 - 2 * 0.0625**2), rel=1e-9)
+
+
+def test_a_wanted_speed_stands_once():
+    speeds = starting_speeds((0.1, 1.3), [], [1.0, 1.0 + 2e-16], points=13)
+    assert np.sum(np.abs(speeds - 1.0) < 1e-6) <= 2
+    assert np.sum(speeds == 1.0) == 1
+
+
 def test_rows_that_are_not_sharp_get_no_peaks():
     found = swept(oscillator(0.05), starting_speeds((0.1, 4.0), []), np.array([False, True, False]))
     assert {top.row for top in found.tops} == {1}
