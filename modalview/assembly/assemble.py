@@ -1,7 +1,7 @@
 """A model becomes terms over independent coordinates; an edit of a value only refills them."""
 
 from collections.abc import Mapping, Sequence
-from dataclasses import dataclass
+from dataclasses import dataclass, field, replace
 from functools import cached_property
 from typing import Any
 
@@ -10,8 +10,9 @@ import numpy.typing as npt
 import scipy.sparse as sp
 
 from modalview.assembly.coordinates import Coordinates, independent_coordinates
+from modalview.assembly.kept import coordinates_again
 from modalview.assembly.kinematics import places
-from modalview.assembly.masses import principal_terms
+from modalview.assembly.linkterms import LinkTerms, link_terms
 from modalview.assembly.parameters import Case, Parameter, shown_name, values_at
 from modalview.assembly.pencil import Coordinate, Pencil, Reused
 from modalview.assembly.perpart import PerPart, per_part
@@ -19,60 +20,14 @@ from modalview.assembly.quadratic import QuadraticForm
 from modalview.assembly.rigid import rigid_body_motions
 from modalview.assembly.scales import coordinate_scales
 from modalview.assembly.soundness import require_links
-from modalview.assembly.stretch import Stretch, stretches
-from modalview.factor.pattern import union_pattern
-from modalview.model.parts import FREEDOMS, Body, InertiaTensor, Link, Model, Motion
+from modalview.assembly.termsets import TermSet, terms_of_links, terms_of_masses
+from modalview.factor.earlier import EarlierCounts
+from modalview.factor.pattern import Pattern, union_pattern
+from modalview.model.parts import FREEDOMS, Model, Motion
 
 Array = npt.NDArray[np.float64]
 
-# A term is a product of at most three typed values (a beam's E and I, a spring's k and its dynamic ratio).
-FACTORS = 3
 ALL_FREEDOMS = FREEDOMS[Motion.SPACE]
-# An entry this small against the products it is the sum of is their rounding: sums have a dozen products,
-# and lengths typed to fifteen digits differ by more than this where they differ at all.
-CANCELLED = 1e-14
-
-
-@dataclass(frozen=True, eq=False)
-class TermSet:
-    """Rank-one terms of one kind: sum v_i r_i r_i^T with v_i = factor_i times a product of parameters.
-
-    Attributes
-    ----------
-    rows : csr_array (t, n)
-        In the independent coordinates.
-    support_rows : csr_array (t, s)
-        Stretch per unit motion of a support, columns as ``support_freedoms``.
-    factor : array (t,)
-    product_of : int array (t, 3)
-        Indices of parameters; the index one past the last stands for 1.
-    part : tuple of str
-        The part each term belongs to.
-    """
-
-    rows: sp.csr_array
-    support_rows: sp.csr_array
-    support_freedoms: tuple[tuple[str, str], ...]
-    factor: Array
-    product_of: npt.NDArray[np.int64]
-    part: tuple[str, ...]
-
-    def values(self, parameter_values: Array) -> Array:
-        """Return the value of every term (t,), SI."""
-        padded = np.append(parameter_values, 1.0)
-        products: Array = self.factor * padded[self.product_of].prod(axis=1)
-        return products
-
-    @cached_property
-    def form(self) -> QuadraticForm:
-        """The matrix of the terms, ready to be refilled."""
-        return QuadraticForm(self.rows)
-
-    @cached_property
-    def at_work(self) -> frozenset[str]:
-        """Parts with a term that some motion stretches."""
-        filled = np.diff(self.rows.indptr)
-        return frozenset(part for part, entries in zip(self.part, filled, strict=True) if entries)
 
 
 @dataclass(frozen=True, eq=False)
@@ -86,13 +41,35 @@ class Structure:
     mass: TermSet
     damping: TermSet
     rigid_body: Array
+    links: Mapping[str, LinkTerms]
+    before: "Before | None" = field(default=None, repr=False)
 
     @cached_property
     def reused(self) -> Reused:
         """What all pencils of this structure share."""
-        ones = [np.ones(len(terms.part)) for terms in (self.stiffness, self.mass)]
-        pattern = union_pattern(self.stiffness.form.matrix(ones[0]), self.mass.form.matrix(ones[1]))
-        return Reused(pattern, QuadraticForm(sp.csr_array(abs(self.stiffness.rows))))
+        stiffness, mass = self.stiffness.form, self.mass.form
+        if self.before is not None and self.before.fits(stiffness, mass):
+            pattern = self.before.pattern
+        else:
+            ones = [np.ones(len(terms.part)) for terms in (self.stiffness, self.mass)]
+            pattern = union_pattern(stiffness.matrix(ones[0]), mass.matrix(ones[1]))
+        absolute = sp.csr_array(abs(self.stiffness.rows))
+        return Reused(
+            pattern, stiffness.of_rows(absolute) if stiffness.fits(absolute) else QuadraticForm(absolute)
+        )
+
+
+@dataclass(frozen=True, slots=True, eq=False)
+class Before:
+    """The pattern of the model before an edit of places, and the forms that have it."""
+
+    stiffness: QuadraticForm
+    mass: QuadraticForm
+    pattern: Pattern
+
+    def fits(self, stiffness: QuadraticForm, mass: QuadraticForm) -> bool:
+        """Whether other forms have the same."""
+        return self.stiffness.shares_pattern(stiffness) and self.mass.shares_pattern(mass)
 
 
 @dataclass(frozen=True, eq=False)
@@ -167,11 +144,17 @@ class Assembly:
         return {}
 
     def _filled(self, case: Case) -> Pencil:
-        at, structure = values_at(self.parameters, case), self.structure
+        return self.pencil_at(values_at(self.parameters, case), nominal=case is Case.NOMINAL)
+
+    def pencil_at(self, at: Array, *, nominal: bool = False) -> Pencil:
+        """Return K, M and C at any values of the parameters (p,), SI; nothing is kept.
+
+        ``nominal`` says that these are the nominal ones: they give the scale of the coordinates in all cases.
+        """
+        structure = self.structure
         stiffness = structure.stiffness.values(at)
         mass = structure.mass.form.matrix(structure.mass.values(at))
         free = structure.coordinates.free
-        nominal = case is Case.NOMINAL
         # Coordinates are compared on one scale in all cases.
         scale = coordinate_scales(self.model.motion, free, mass) if nominal else self.pencil().scale
         return Pencil(
@@ -218,118 +201,45 @@ def assemble(model: Model, previous: Assembly | None = None) -> Assembly:
     if previous is not None and previous.structure.skeleton == bones:
         return Assembly(model, previous.structure, parameters, by_part)
     require_links(model)
-    return Assembly(model, _structure(model, bones, parameters), parameters, by_part)
+    alike = previous if previous is not None and previous.model.motion is model.motion else None
+    return Assembly(model, _structure(by_part, bones, parameters, alike), parameters, by_part)
 
 
-def _structure(model: Model, bones: tuple[Any, ...], parameters: Sequence[Parameter]) -> Structure:
-    coordinates = independent_coordinates(model)
+def _structure(
+    by_part: PerPart, bones: tuple[Any, ...], parameters: Sequence[Parameter], previous: Assembly | None
+) -> Structure:
+    """Build a structure from what each part contributes, with what serves again of that before the edit."""
+    model, old = by_part.model, previous.structure if previous else None
+    known = coordinates_again(by_part, previous.by_part, old.coordinates) if previous and old else None
+    coordinates = known or independent_coordinates(model)
     index = {p.id: i for i, p in enumerate(parameters)}
-    here = places(model)
-    terms = [(link, term) for link in model.links for term in stretches(link, here)]
-    sets = {
-        family: _link_terms([(k, t) for k, t in terms if t.family == family], model, coordinates, index)
-        for family in ("stiffness", "damping")
-    }
+    of_links = by_part.bones[len(model.bodies) + len(model.supports) :]
+    links = link_terms(model.links, of_links, places(model), old.links if old else {})
+    rows = [row for terms in links.values() for row in terms.rows]
+    stiffness, damping = (
+        terms_of_links([row for row in rows if row.family == family], model, coordinates, index, like)
+        for family, like in (
+            ("stiffness", old.stiffness.form if old else None),
+            ("damping", old.damping.form if old else None),
+        )
+    )
     return Structure(
         skeleton=bones,
         coordinates=coordinates,
-        labels=tuple(Coordinate(part, freedom, i) for i, (part, freedom) in enumerate(coordinates.free)),
-        stiffness=sets["stiffness"],
-        mass=_mass_terms(model, coordinates, index),
-        damping=sets["damping"],
-        rigid_body=rigid_body_motions(model, coordinates, sets["stiffness"].rows),
+        labels=old.labels if old and known else _labels(coordinates),
+        stiffness=stiffness,
+        mass=terms_of_masses(model, coordinates, index, old.mass.form if old else None),
+        damping=damping,
+        rigid_body=rigid_body_motions(model, coordinates, stiffness.rows),
+        links=links,
+        before=_before(old) if old else None,
     )
 
 
-def _link_terms(
-    terms: Sequence[tuple[Link, Stretch]],
-    model: Model,
-    coordinates: Coordinates,
-    index: Mapping[str, int],
-) -> TermSet:
-    columns = {
-        (body.id, name): i
-        for i, (body, name) in enumerate((b, f) for b in model.bodies for f in FREEDOMS[model.motion])
-    }
-    supports = tuple((support.id, name) for support in model.supports for name in FREEDOMS[model.motion])
-    support_columns = {key: i for i, key in enumerate(supports)}
-    forms = [{key: float(entry) / term.divide for key, entry in term.form.items()} for _, term in terms]
-    products = []
-    for link, term in terms:
-        keys = [f"{link.id}.{key}" for key in term.keys]
-        if term.family == "stiffness" and link.dynamic_ratio is not None:
-            keys.append(f"{link.id}.dynamic_ratio")
-        products.append([index[key] for key in keys])
-    return TermSet(
-        rows=_without_rounding(_rows(forms, columns), coordinates.to_bodies),
-        support_rows=_rows(forms, support_columns),
-        support_freedoms=supports,
-        factor=np.array([term.factor for _, term in terms], dtype=float),
-        product_of=_padded(products, len(index)),
-        part=tuple(link.id for link, _ in terms),
-    )
+def _labels(coordinates: Coordinates) -> tuple[Coordinate, ...]:
+    return tuple(Coordinate(part, freedom, i) for i, (part, freedom) in enumerate(coordinates.free))
 
 
-def _without_rounding(forms: sp.csr_array, to_bodies: sp.csr_array) -> sp.csr_array:
-    """Return forms @ to_bodies without what is left of entries that cancel.
-
-    A spring between two bodies of one rigid cluster stretches by nothing; a rest of 1e-17 in its row would
-    be taken for a direction of its own where rows are normalised.
-    """
-    rows, products = forms @ to_bodies, abs(forms) @ abs(to_bodies)
-    meant = (abs(rows) - CANCELLED * products) > 0
-    kept = sp.csr_array(rows.multiply(meant))
-    kept.eliminate_zeros()
-    kept.sort_indices()
-    return kept
-
-
-def _rows(
-    forms: Sequence[Mapping[tuple[str, str], float]], columns: Mapping[tuple[str, str], int]
-) -> sp.csr_array:
-    known = [{columns[key]: entry for key, entry in form.items() if key in columns} for form in forms]
-    columns_of = np.array([column for form in known for column in form], dtype=np.int64)
-    entries = np.array([entry for form in known for entry in form.values()], dtype=float)
-    ends = np.cumsum([0, *(len(form) for form in known)])
-    return sp.csr_array((entries, columns_of, ends), shape=(len(forms), len(columns)))
-
-
-def _padded(products: Sequence[Sequence[int]], one: int) -> npt.NDArray[np.int64]:
-    table = np.full((len(products), FACTORS), one, dtype=np.int64)
-    for row, product in zip(table, products, strict=True):
-        row[: len(product)] = product
-    return table
-
-
-def _mass_terms(model: Model, coordinates: Coordinates, index: Mapping[str, int]) -> TermSet:
-    terms = [(body, *term) for body in model.bodies for term in _body_mass_terms(body, model.motion)]
-    terms = [term for term in terms if f"{term[0].id}.{term[1]}" in index]
-    columns = {
-        (body.id, name): i
-        for i, (body, name) in enumerate((b, f) for b in model.bodies for f in FREEDOMS[model.motion])
-    }
-    rows = _rows([form for _, _, _, form in terms], columns) @ coordinates.to_bodies
-    # Where principal axes are rounded, a direction known to be massless would keep a rest of 1e-17.
-    rows = sp.csr_array(rows @ sp.diags_array((~coordinates.massless).astype(float)))
-    rows.eliminate_zeros()
-    return TermSet(
-        rows=rows,
-        support_rows=sp.csr_array((len(terms), 0)),
-        support_freedoms=(),
-        factor=np.array([factor for _, _, factor, _ in terms], dtype=float),
-        product_of=_padded([[index[f"{body.id}.{key}"]] for body, key, _, _ in terms], len(index)),
-        part=tuple(body.id for body, _, _, _ in terms),
-    )
-
-
-def _body_mass_terms(body: Body, motion: Motion) -> list[tuple[str, float, dict[tuple[str, str], float]]]:
-    """Return (key of the value, factor, form) of each direction in which a body's inertia acts."""
-    names = FREEDOMS[motion]
-    found = [("mass", 1.0, {(body.id, name): 1.0}) for name in names if not name.startswith("r")]
-    if isinstance(body.inertia, InertiaTensor):
-        for moment, axis in principal_terms(body.inertia):
-            form = {(body.id, name): a for name, a in zip(("rx", "ry", "rz"), axis, strict=True) if a}
-            found.append(("inertia", moment, form))
-    else:
-        found.append(("inertia", 1.0, {(body.id, "rz"): 1.0}))
-    return found
+def _before(old: Structure) -> Before:
+    """Return the pattern of a structure without the factors kept with it, which serve its own rows only."""
+    return Before(old.stiffness.form, old.mass.form, replace(old.reused.pattern, earlier=EarlierCounts()))

@@ -1,1 +1,1 @@
-"""Changes that clear a model: windows of values, placement, least change, tolerances to narrow; as options."""
+"""Changes that clear a model, as options: windows of values, placed modes, least change, tolerances."""

@@ -1,0 +1,240 @@
+"""All windows of one value that clear every check over all tolerances, each proven by counts at its ends."""
+
+import math
+from collections.abc import Callable, Sequence
+from dataclasses import dataclass
+from itertools import pairwise
+
+import numpy as np
+import numpy.typing as npt
+
+from modalview.advice.changes.edges import Edge, Gate
+from modalview.advice.changes.numbers import DOWN, UP, rounded
+from modalview.advice.changes.results import Window
+from modalview.advice.changes.values import Variable
+from modalview.assembly.parameters import Case
+
+Array = npt.NDArray[np.float64]
+
+# Ends are shown with so few digits where the window is wide enough, else with more.
+DIGITS = (4, 5, 6)
+# The last digit steps inward so often where rounding leaves the count at an end open.
+STEPS = 3
+# An open end is proven so far beyond the other end, and beyond today's value.
+FAR = 1e4
+YOUR_LIMIT = "your limit"
+# No model has a value beyond these factors of today's.
+SMALLEST, LARGEST = 1e-9, 1e9
+
+
+@dataclass(frozen=True, slots=True)
+class Span:
+    """Factors between two crossings at which every check is clear, not yet rounded.
+
+    Parameters
+    ----------
+    low, high : float
+        0 and infinity where nothing ends it.
+    bound_by : pair of str
+    """
+
+    low: float
+    high: float
+    bound_by: tuple[str, str]
+
+
+@dataclass(frozen=True, eq=False)
+class _Steps:
+    """The count at one edge as a step function of one factor, falling (stiffness) or rising (mass)."""
+
+    at: Array
+    start: int
+    rise: int
+
+    def number(self, factor: float) -> int:
+        return self.start + self.rise * int(np.searchsorted(self.at, factor))
+
+
+def _profile(edge: Edge, variable: Variable) -> _Steps:
+    flexible = edge.flexible((variable,))
+    at = flexible.crossings()
+    rise = 1 if variable.family == "mass" else -1
+    passed = int(np.searchsorted(at, 1.0))
+    return _Steps(at, flexible.below - rise * passed, rise)
+
+
+def spans(gates: Sequence[Gate], variable: Variable) -> tuple[Span, ...]:
+    """Return the factors of one variable that clear every check over all tolerances, ascending.
+
+    Parameters
+    ----------
+    gates : sequence of Gate
+    variable : Variable
+        Its limits cut the spans.
+
+    Notes
+    -----
+    A mode crosses an edge where K - sigma M is singular. The terms of the variable have few columns, so that
+    all crossings are eigenvalues of one small matrix for each edge. Between crossings no count changes.
+    """
+    profiles = [(gate, _profile(gate.upper, variable), _profile(gate.lower, variable)) for gate in gates]
+    every = [steps.at for _, upper, lower in profiles for steps in (upper, lower)]
+    points = np.unique(np.concatenate([*every, np.zeros(0)]))
+    points = points[(points > SMALLEST) & (points < LARGEST)]
+    ends = [0.0, *points.tolist(), math.inf]
+    found: list[Span] = []
+    for low, high in pairwise(ends):
+        middle = _middle(low, high)
+        if any(upper.number(middle) > lower.number(middle) for _, upper, lower in profiles):
+            continue
+        if found and found[-1].high == low:
+            found[-1] = Span(found[-1].low, high, found[-1].bound_by)
+        else:
+            found.append(Span(low, high, ("", "")))
+    named = [Span(s.low, s.high, (_ended(profiles, s.low), _ended(profiles, s.high))) for s in found]
+    cut = (_cut(one, variable.limits) for one in named)
+    return tuple(one for one in cut if one is not None)
+
+
+def _middle(low: float, high: float) -> float:
+    if low == 0:
+        return high / 2 if high < math.inf else 1.0
+    return math.sqrt(low * high) if high < math.inf else 2 * low
+
+
+def _ended(profiles: Sequence[tuple[Gate, _Steps, _Steps]], factor: float) -> str:
+    """Return which check, at which tolerance case, changes at a factor."""
+    if factor in (0.0, math.inf):
+        return ""
+    for gate, upper, lower in profiles:
+        if factor in upper.at:
+            return f"{gate.name}, {Case.SOFT_HEAVY}"
+        if factor in lower.at:
+            return f"{gate.name}, {Case.STIFF_LIGHT}"
+    return ""
+
+
+def _cut(span: Span, limits: tuple[float, float]) -> Span | None:
+    low, high = max(span.low, limits[0]), min(span.high, limits[1])
+    if low >= high and not (low == high == limits[0] == limits[1]):
+        return None
+    by = (
+        YOUR_LIMIT if low > span.low else span.bound_by[0],
+        YOUR_LIMIT if high < span.high else span.bound_by[1],
+    )
+    return Span(low, high, by)
+
+
+def windows(
+    gates: Sequence[Gate],
+    variable: Variable,
+    nominal: float,
+    text_of: Callable[[float, int], str],
+    spelled: Callable[[float, int, int], float] = rounded,
+) -> tuple[Window, ...]:
+    """Return the windows of a variable, their ends rounded inward and proven by counts.
+
+    Parameters
+    ----------
+    gates : sequence of Gate
+    variable : Variable
+    nominal : float
+        Today's value, SI; 1 for several that change by one factor.
+    text_of : callable
+        Text of a value at so many digits.
+    spelled : callable
+        Rounds a value to so many digits and to a side, in the unit it is shown in.
+    """
+    found = []
+    for span in spans(gates, variable):
+        window = _window(gates, variable, span, nominal, text_of, spelled)
+        if window is not None:
+            found.append(window)
+    return tuple(found)
+
+
+def _window(
+    gates: Sequence[Gate],
+    variable: Variable,
+    span: Span,
+    nominal: float,
+    text_of: Callable[[float, int], str],
+    spelled: Callable[[float, int, int], float],
+) -> Window | None:
+    exact = (span.low * nominal, span.high * nominal)
+    last = None
+    for digits in DIGITS:
+        low, high = exact
+        for _ in range(STEPS):
+            low = spelled(_inside(low, exact[0], UP), digits, UP) if low > 0 else 0.0
+            high = spelled(_inside(high, exact[1], DOWN), digits, DOWN) if high < math.inf else math.inf
+            if low > high:
+                break
+            texts = (
+                text_of(low, digits) if low > 0 else "",
+                text_of(high, digits) if high < math.inf else "",
+            )
+            proven = proves(gates, variable, low / nominal, high / nominal)
+            last = Window(low, high, *texts, exact, span.bound_by, proven)
+            if proven:
+                return last
+            low, high = _next(low, digits, UP), _next(high, digits, DOWN)
+    return last
+
+
+def _inside(value: float, exact: float, side: int) -> float:
+    """Keep a value of which unit conversion lost a last bit on the inner side of the exact end."""
+    return max(value, exact) if side == UP else min(value, exact)
+
+
+def _next(value: float, digits: int, side: int) -> float:
+    """Return a value that rounds to the next number of so many digits on a side."""
+    return value * (1 + side * 10.0 ** (1 - digits) / 2) if 0 < value < math.inf else value
+
+
+def proves(gates: Sequence[Gate], variable: Variable, low: float, high: float) -> bool:
+    """Return whether counts prove that every factor from ``low`` to ``high`` clears every check.
+
+    Notes
+    -----
+    Ordered frequencies move one way with the factor (Courant-Fischer): with as many modes up to the band at
+    the softest end, soft-heavy, as below it at the stiffest end, stiff-light, none lies in it anywhere
+    between. An open end is counted at ``FAR`` times the other one.
+    """
+    bottom = low if low > 0 else min(high, 1.0) / FAR
+    top = high if high < math.inf else max(low, 1.0) * FAR
+    return clear_between(gates, {variable.id: variable}, {variable.id: bottom}, {variable.id: top})
+
+
+def clear_between(
+    gates: Sequence[Gate],
+    variables: dict[str, Variable],
+    low: dict[str, float],
+    high: dict[str, float],
+) -> bool:
+    """Return whether counts prove every check clear at all factors from ``low`` to ``high``, by variable."""
+    soft, stiff = corners(variables, low, high)
+    states = {id(gate.state): gate.state for gate in gates}
+    for key, state in states.items():
+        below = state.counter_with(Case.SOFT_HEAVY, soft)
+        above = state.counter_with(Case.STIFF_LIGHT, stiff)
+        for gate in gates:
+            if id(gate.state) != key:
+                continue
+            most = below.at_most(gate.upper.omega).number
+            least = above.below(gate.lower.omega).number
+            if most is None or least is None or most > least:
+                return False
+    return True
+
+
+def corners(
+    variables: dict[str, Variable], low: dict[str, float], high: dict[str, float]
+) -> tuple[dict[str, float], dict[str, float]]:
+    """Return the factors of all parameters at the softest and at the stiffest corner of a box."""
+    soft, stiff = {}, {}
+    for key, one in variables.items():
+        ends = (low[key], high[key]) if one.family == "stiffness" else (high[key], low[key])
+        for member in one.members:
+            soft[member], stiff[member] = ends
+    return soft, stiff
