@@ -53,10 +53,7 @@ class Structure:
         else:
             ones = [np.ones(len(terms.part)) for terms in (self.stiffness, self.mass)]
             pattern = union_pattern(stiffness.matrix(ones[0]), mass.matrix(ones[1]))
-        absolute = sp.csr_array(abs(self.stiffness.rows))
-        return Reused(
-            pattern, stiffness.of_rows(absolute) if stiffness.fits(absolute) else QuadraticForm(absolute)
-        )
+        return Reused(pattern, QuadraticForm(sp.csr_array(abs(self.stiffness.rows)), stiffness))
 
 
 @dataclass(frozen=True, slots=True, eq=False)
