@@ -1,5 +1,6 @@
 """The door to changes that clear a model: windows, least changes, tolerances to narrow, modes to place."""
 
+import math
 from collections.abc import Iterator, Sequence
 from dataclasses import dataclass
 from itertools import combinations
@@ -27,12 +28,17 @@ from modalview.units.show import short
 
 # Pairs of so many values are tried where nobody says which may change together, with so many boxes each.
 PAIRED, BOXES_PER_PAIR = 5, 4_000
+# Two values are worth changing where that costs so much less than one.
+WORTH = 0.95
 # So many pairs are kept as options.
 PAIRS_SHOWN = 3
 # Ceilings of a model of more modes than this are left out of the overview; ask for one value.
 MOST_CEILINGS = 200
 NO_CHECKS = "Nothing to clear: give a machine its speed, its orders and the margin wanted."
-NOT_LOOKED_AT = "Changed heights and places of mounts, added absorbers and barred speeds are no values: not looked at here."
+NOT_LOOKED_AT = (
+    "Changed heights and places of mounts, added absorbers and barred speeds are no values: "
+    "not looked at here."
+)
 
 
 @dataclass(frozen=True, slots=True)
@@ -166,7 +172,7 @@ def changes(asked: ChangesRequest) -> Changes:
 
 def _weights(asked: ChangesRequest) -> dict[str, float]:
     for name, weight in asked.weights:
-        if not 0 < weight < float("inf"):
+        if not 0 < weight < math.inf:
             raise InputError(f"The weight of {name} is {weight:g}; it must be above zero.")
     return dict(asked.weights)
 
@@ -227,17 +233,17 @@ class _Work:
         ranked = sorted(single, key=lambda one: one[1].amount)
         matter = list({one.id: one for one, _ in ranked}.values())
         others = [variable_named(assembly, one.value) for one in windows if not one.windows]
-        tried = [self._least(pair, BOXES_PER_PAIR) for pair in _pairs([*matter, *others])]
-        cheapest = min((option.amount for _, option in single), default=float("inf"))
-        found = [one for one in tried if one.option and len(one.option.changes) > 1 and one.amount < cheapest]
+        cheapest = min((option.amount for _, option in single), default=math.inf)
+        tried = [self._least(pair, BOXES_PER_PAIR, cheapest * WORTH) for pair in _pairs([*matter, *others])]
+        found = [one for one in tried if one.option is not None]
         return tuple(sorted(found, key=lambda one: one.amount)[:PAIRS_SHOWN])
 
-    def _least(self, chosen: Sequence[Variable], boxes: int) -> LeastChange:
+    def _least(self, chosen: Sequence[Variable], boxes: int, below: float = math.inf) -> LeastChange:
         def told(what: str, share: float) -> None:
             self.tell(what, 0.6 + 0.2 * share)
 
         weights = tuple(self.weight(one) for one in chosen)
-        search = Search(weights, self.asked.request.cancelled, told, boxes)
+        search = Search(weights, self.asked.request.cancelled, told, boxes, below)
         return least_of(self.base, self.gates, chosen, search)
 
     def placed(self, place: Place) -> Placement:
@@ -298,7 +304,7 @@ def _notes(base: Base) -> tuple[str, ...]:
         found.append(
             f"Every option clears the model as it is and its load cases together: {', '.join(names)}."
         )
-    limited = [v for v in every_variable(base.states[0].assembly) if v.limits != (0.0, float("inf"))]
+    limited = [v for v in every_variable(base.states[0].assembly) if v.limits != (0.0, math.inf)]
     if limited:
         found.append(f"Within your limits for {short(len(limited))} of the values.")
     return (*found, NOT_LOOKED_AT)

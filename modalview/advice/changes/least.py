@@ -40,12 +40,15 @@ class Search:
     progress : callable or None
         Told (what is done, share done 0..1).
     most_boxes : int
+    below : float
+        What costs as much or more is not wanted.
     """
 
     weights: tuple[float, ...]
     cancelled: Callable[[], bool] = field(default=lambda: False)
     progress: Callable[[str, float], None] | None = None
     most_boxes: int = MOST_BOXES
+    below: float = math.inf
 
 
 @dataclass(frozen=True, slots=True, eq=False)
@@ -108,7 +111,7 @@ def least_change(landscape: Landscape, search: Search) -> Least:
     limits = searched(landscape)
     if np.any(limits[:, 0] > limits[:, 1]):
         return Least(Found.NONE_EXISTS, None, math.inf, math.inf, 0, limits)
-    tree = _Tree(landscape, search, np.log(limits))
+    tree = _Tree(landscape, search, np.log(limits), best=search.below)
     tree.grow()
     return tree.result(limits)
 
@@ -192,7 +195,7 @@ class _Tree:
         if self.point is not None:
             status = Found.CLEAR_NOW if self.best == 0 else Found.FOUND
             return Least(status, np.exp(self.point), self.best, bound, self.boxes, limits)
-        exhausted = not self.heap and self.stuck == math.inf
+        exhausted = not self.heap and self.stuck == math.inf and self.search.below == math.inf
         none = exhausted and len(limits) <= MOST_PROVEN and self._recounted()
         status = Found.NONE_EXISTS if none else Found.NONE_FOUND
         return Least(status, None, math.inf, bound, self.boxes, limits)

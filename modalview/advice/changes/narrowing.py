@@ -35,6 +35,8 @@ MOST_SETS = 5_000
 # The share of a tolerance that may stay is found to 1 in so many; it is shown to two digits.
 STEPS = 512
 DIGITS = 2
+# Nobody is asked to know a stiffness, or a mass, to less than this share; common practice, no source.
+KNOWN = {"stiffness": 0.02, "mass": 0.005}
 # So many options are worked out, each solved anew.
 SHOWN = 6
 
@@ -46,10 +48,16 @@ class _Alone:
     parameter: Parameter
     variable: Variable
 
-    def factor(self, case: Case, left: Array) -> Array:
-        """Return its factor in a case, of its value there, when a share of the tolerance is left."""
+    def left(self, share: Array) -> Array:
+        """Return what is left of the tolerance: all of it at share 1, what can be known at share 0."""
         p = self.parameter
-        found: Array = (p.nominal + left * (p.at(case) - p.nominal)) / p.at(case)
+        least = min(1.0, KNOWN[p.family] * p.nominal / max(p.nominal - p.low, p.high - p.nominal))
+        return least + share * (1 - least)
+
+    def factor(self, case: Case, share: Array) -> Array:
+        """Return its factor in a case, of its value there, at a share of the tolerance."""
+        p = self.parameter
+        found: Array = (p.nominal + self.left(share) * (p.at(case) - p.nominal)) / p.at(case)
         return found
 
 
@@ -76,16 +84,16 @@ class Question:
         """All of the tolerances at once."""
         return landscape(self.gates, [one.variable for one in self.alone])
 
-    def clear(self, chosen: Sequence[int], left: Array) -> Bools:
-        """Return whether the checks are clear when some tolerances, by number, keep shares (m, chosen)."""
+    def clear(self, chosen: Sequence[int], share: Array) -> Bools:
+        """Return whether the checks are clear when some tolerances, by number, are at shares (m, chosen)."""
         if self.cancelled():
             raise CancelledError("Stopped by the user.")
         tolerances = [self.alone[i] for i in chosen]
         soft, stiff = (
-            np.stack([one.factor(case, left[:, i]) for i, one in enumerate(tolerances)], axis=1)
+            np.stack([one.factor(case, share[:, i]) for i, one in enumerate(tolerances)], axis=1)
             for case in (Case.SOFT_HEAVY, Case.STIFF_LIGHT)
         )
-        clear = np.ones(len(left), dtype=bool)
+        clear = np.ones(len(share), dtype=bool)
         for upper, lower in self.whole.counters:
             most, sure = upper.only(chosen).counts(soft)
             least, also = lower.only(chosen).counts(stiff)
@@ -157,7 +165,7 @@ def _candidates(base: Base) -> tuple[_Alone, ...]:
 
 
 def _sets(question: Question) -> tuple[list[tuple[int, ...]], bool]:
-    """Return sets of tolerances, by number, that do with nothing left of them; whether no smaller one does."""
+    """Return sets of tolerances, by number, that do when all can be known of them; whether none smaller."""
     every = range(len(question.alone))
     for size in range(1, ALL_TRIED + 1):
         if math.comb(len(every), size) > MOST_SETS:
@@ -195,7 +203,7 @@ def _narrowed(question: Question, chosen: tuple[int, ...]) -> Option | None:
     shares = np.linspace(0.0, 1.0, STEPS, endpoint=False)
     clear = question.clear(chosen, np.repeat(shares[:, None], len(chosen), axis=1))
     left = float(shares[np.flatnonzero(clear)[-1]]) if clear.any() else 0.0
-    for share in (left, left * 0.98, left * 0.9, 0.0):
+    for share in (left, left * 0.98, left * 0.9):
         model, changes = _written(question.base.model, [question.alone[i] for i in chosen], share)
         after = tried(question.base, model)
         if after is not None and _proves(question, after):
@@ -213,7 +221,7 @@ def _proves(question: Question, after: Tried) -> bool:
     )
 
 
-def _written(model: Model, chosen: Iterable[_Alone], left: float) -> tuple[Model, tuple[ValueChange, ...]]:
+def _written(model: Model, chosen: Iterable[_Alone], share: float) -> tuple[Model, tuple[ValueChange, ...]]:
     changes = []
     for one in chosen:
         p = one.parameter
@@ -222,7 +230,7 @@ def _written(model: Model, chosen: Iterable[_Alone], left: float) -> tuple[Model
         old = p.tolerance or Tolerance()
         quantity = quantity_of(model, address) if isinstance(there, Value) else None
         written = Written(quantity, p.entry, model.units or "SI") if quantity and p.entry else None
-        new = _tightened(old, p, left, written)
+        new = _tightened(old, p, float(one.left(np.array(share))), written)
         if isinstance(there, Value | InertiaTensor):
             model = put(model, address, replace(there, tolerance=new))
         key = p.id.partition(f"{p.part}.")[2].replace(".", " ").replace("_", " ")
@@ -276,7 +284,11 @@ def _within(text: str) -> str:
 def _impossible(question: Question) -> str:
     if not question.alone:
         return "No value has a tolerance: only the tolerance of the speed reaches the band."
-    return "No narrower tolerance of values proves it: the tolerance of the speed alone reaches the band."
+    stiffness, mass = (short(100 * KNOWN[family]) for family in ("stiffness", "mass"))
+    return (
+        f"Not by tolerances: even with every stiffness known to {stiffness} % and every mass to {mass} % "
+        "some combination reaches the band. Change a value."
+    )
 
 
 def _sentence(options: Sequence[Option], size: int, *, smallest: bool) -> str:

@@ -112,7 +112,7 @@ def option_of(base: Base, after: Tried, told: Told) -> Option:
 def _cautions(changes: Sequence[ValueChange]) -> tuple[str, ...]:
     found = []
     for one in changes:
-        factor = one.factor
+        factor = 1.0 if one.value.endswith(".tolerance") else one.factor
         if factor > UNUSUAL:
             found.append(f"{one.label} becomes {factor:.3g} times what it is: rarely built.")
         elif 0 < factor < 1 / UNUSUAL:
@@ -122,22 +122,3 @@ def _cautions(changes: Sequence[ValueChange]) -> tuple[str, ...]:
     if any(one.value.endswith((".A", ".I", ".Iy", ".Iz", ".J")) for one in changes):
         found.append("A section's area and second moments change together: enter those of the new section.")
     return tuple(found)
-
-
-def change_text(changes: Sequence[ValueChange]) -> str:
-    """Return "Raise stiffness of base support from 175 kN/mm to 271 kN/mm", for a few changes."""
-    words = [_one(change) for change in changes[:3]]
-    if len(changes) > 3:
-        same = {(c.before, c.after, c.label.partition(" of ")[0]) for c in changes}
-        if len(same) == 1:
-            before, after, what = same.pop()
-            verb = "Raise" if changes[0].factor > 1 else "Lower"
-            return f"{verb} {what} of {len(changes)} parts from {before} to {after} each"
-        words.append(f"{len(changes) - 3} more")
-    text = "; ".join(words)
-    return text[:1].upper() + text[1:]
-
-
-def _one(change: ValueChange) -> str:
-    verb = "raise" if change.factor > 1 else "lower"
-    return f"{verb} {change.label} from {change.before} to {change.after}"

@@ -3,7 +3,7 @@
 import math
 
 from modalview.advice.changes.ceilings import reach
-from modalview.advice.changes.options import Base, Told, change_text, option_of, tried
+from modalview.advice.changes.options import Base, Told, option_of, tried
 from modalview.advice.changes.placement import placing_factor, reach_of
 from modalview.advice.changes.results import Kind, Placement
 from modalview.advice.changes.values import Variable
@@ -11,8 +11,8 @@ from modalview.advice.changes.writing import Writer
 from modalview.errors import InputError
 from modalview.units.show import significant
 
-# A frequency is placed to far less than it is ever known: six digits of the value.
-DIGITS = 6
+# A frequency is placed to far less than it is ever known: five digits of the value.
+DIGITS = 5
 
 
 def placement(
@@ -50,7 +50,8 @@ def placement(
             f"{wanted[:1].upper()}{wanted[1:]} is where it is." if not changes else "The value breaks a rule."
         )
         return Placement(variable.id, variable.label, mode, frequency_hz, span, factor, None, text)
-    told = Told(Kind.PLACED, change_text(changes), changes, weight * abs(math.log(factor)), claim=wanted)
+    said = writer.told((variable,), (factor,), DIGITS)
+    told = Told(Kind.PLACED, said, changes, weight * abs(math.log(factor)), claim=wanted)
     option = option_of(base, after, told)
     text = f"{option.text} puts {wanted}."
     return Placement(variable.id, variable.label, mode, frequency_hz, span, factor, option, text)

@@ -8,7 +8,7 @@ import numpy as np
 from modalview.advice.changes.edges import Gate
 from modalview.advice.changes.landscape import Landscape, landscape
 from modalview.advice.changes.least import Least, Search, least_change, rounded_points
-from modalview.advice.changes.options import Base, Told, Tried, change_text, option_of, tried
+from modalview.advice.changes.options import Base, Told, Tried, option_of, tried
 from modalview.advice.changes.results import Found, Kind, LeastChange, Option, ValueChange
 from modalview.advice.changes.values import Variable, require_apart
 from modalview.advice.changes.writing import Writer
@@ -83,7 +83,8 @@ def _proven(base: Base, scene: Landscape, least: Least, search: Search) -> Optio
                 model, changes = writer.changed(scene.variables, points[number].tolist(), digits)
                 after = tried(base, model)
                 if after is not None and after.clear:
-                    return _option(base, after, changes, float(costs[number]))
+                    said = writer.told(scene.variables, points[number].tolist(), digits)
+                    return _option(base, after, changes, (said, float(costs[number])))
     return None
 
 
@@ -93,9 +94,10 @@ def _within(points: np.ndarray, least: Least) -> np.ndarray:
     return inside
 
 
-def _option(base: Base, after: Tried, changes: tuple[ValueChange, ...], amount: float) -> Option:
-    kind = Kind.SEVERAL if len(changes) > 1 else Kind.ONE_VALUE
-    return option_of(base, after, Told(kind, change_text(changes), changes, amount))
+def _option(base: Base, after: Tried, changes: tuple[ValueChange, ...], told: tuple[str, float]) -> Option:
+    text, amount = told
+    kind = Kind.SEVERAL if len({one.factor for one in changes}) > 1 else Kind.ONE_VALUE
+    return option_of(base, after, Told(kind, text, changes, amount))
 
 
 def _factors(variables: Sequence[Variable], option: Option | None) -> tuple[float, ...]:

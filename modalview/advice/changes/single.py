@@ -7,7 +7,7 @@ from modalview.advice.changes.ceilings import ceilings, reach
 from modalview.advice.changes.edges import Gate
 from modalview.advice.changes.effects import Ranges
 from modalview.advice.changes.numbers import DOWN, UP
-from modalview.advice.changes.options import Base, Told, change_text, option_of, tried
+from modalview.advice.changes.options import Base, Told, option_of, tried
 from modalview.advice.changes.results import Kind, Option, ValueWindows
 from modalview.advice.changes.values import Variable
 from modalview.advice.changes.windows import windows
@@ -16,7 +16,7 @@ from modalview.advice.changes.writing import Writer
 # Digits of a value that is proposed from a window: those its end was rounded to, at most.
 DIGITS = 6
 # A value beyond so many times today's is no proposal; its window is still shown.
-FARTHEST = 100.0
+FARTHEST = 20.0
 # Where counts leave the end of a window open, a proposal goes so far inward.
 INWARD = (0.0, 1e-4, 1e-3)
 
@@ -86,6 +86,7 @@ def _option(base: Base, variable: Variable, factor: float, side: int, weight: fl
         model, changes = writer.changed((variable,), (moved,), DIGITS)
         after = tried(base, model)
         if after is not None and after.clear:
-            told = Told(Kind.ONE_VALUE, change_text(changes), changes, weight * abs(log(moved)))
+            text = writer.told((variable,), (moved,), DIGITS)
+            told = Told(Kind.ONE_VALUE, text, changes, weight * abs(log(moved)))
             return option_of(base, after, told)
     return None

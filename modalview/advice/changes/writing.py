@@ -19,7 +19,7 @@ from modalview.units.show import short
 # Moments of a tensor keep so many digits, so that none outgrows the sum of the others by rounding.
 TENSOR_DIGITS = 10
 # Values that change by one factor and are not all equal keep so many.
-COMMON_DIGITS = 6
+COMMON_DIGITS = 4
 PROPOSED = "proposed; before:"
 
 
@@ -81,6 +81,23 @@ class Writer:
         nominal = self.nominal(variable)
         return self.spelled(variable, factor * nominal, digits, side) / nominal
 
+    def told(self, variables: Sequence[Variable], factors: Sequence[float], digits: int) -> str:
+        """Say what `changed` does: "Raise stiffness of base support from 175 kN/mm to 271 kN/mm"."""
+        words = []
+        for one, factor in zip(variables, factors, strict=True):
+            if factor == 1.0:
+                continue
+            verb = "raise" if factor > 1 else "lower"
+            entry = self.parameters[one.members[0]].entry
+            after = self.text(one, factor * self.nominal(one), digits)
+            if entry is not None and self.is_single(one):
+                each = " each" if len(one.members) > 1 else ""
+                words.append(f"{verb} {one.label} from {entry.text} to {after}{each}")
+            else:
+                words.append(f"{verb} {one.label} to {after} what it is")
+        text = "; ".join(words)
+        return text[:1].upper() + text[1:]
+
     def changed(
         self, variables: Sequence[Variable], factors: Sequence[float], digits: int
     ) -> tuple[Model, tuple[ValueChange, ...]]:
@@ -100,7 +117,7 @@ class Writer:
         address = address_of(model, p)
         old = look(model, address)
         if isinstance(old, InertiaTensor):
-            text = f"{short(factor, COMMON_DIGITS)} times"
+            text = f"{short(factor, TENSOR_DIGITS)} times"
             change = ValueChange(p.id, f"inertia of {p.label}", "as typed", text, 1.0, factor)
             return put(model, address, _scaled(old, factor)), change
         written = self._written(p)
