@@ -7,11 +7,9 @@ import numpy as np
 from modalview.drawing.primitives import Floats
 from modalview.drawing.responsechartcontent import (
     FORCE,
-    Choice,
     ResponseContent,
     Series,
     machine_of,
-    response_content,
     unit_of,
 )
 from modalview.model.parts import Motion
@@ -63,12 +61,8 @@ def figure(value: float) -> str:
     return significant(value, FIGURES) if np.isfinite(value) else NO_STEADY
 
 
-def amplitude_table(result: ResponseResult, choice: Choice) -> ResponseTable | None:
+def amplitude_table(found: MachineResponse, content: ResponseContent) -> ResponseTable:
     """Return the amplitude at the running speed, or the worst over the speed range, of each excitation."""
-    content = response_content(result, choice)
-    found = machine_of(result, choice.machine)
-    if content is None or found is None:
-        return None
     low, high = content.running_rpm
     details = {one.label: one.sentence for one in found.drivers}
     unit = content.unit
@@ -121,8 +115,10 @@ def worst_of(content: ResponseContent, one: Series) -> tuple[float, float]:
     """Return the largest value of a curve over the running speeds, and the speed of it, rpm."""
     low, high = content.running_rpm
     ends = [(at_speed(content.speeds_rpm, one.values, rpm), rpm) for rpm in (low, high)]
-    inside = (content.speeds_rpm >= low) & (content.speeds_rpm <= high)
-    ends += zip(one.values[inside].tolist(), content.speeds_rpm[inside].tolist(), strict=True)
+    inside = np.flatnonzero((content.speeds_rpm >= low) & (content.speeds_rpm <= high))
+    if len(inside):
+        top = int(inside[np.argmax(one.values[inside])])
+        ends.append((float(one.values[top]), float(content.speeds_rpm[top])))
     if one.total:
         ends += [(peak.value, peak.rpm) for peak in content.peaks if low <= peak.rpm <= high]
     return max(ends)

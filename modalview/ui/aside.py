@@ -41,7 +41,7 @@ def answer_aside(work: Callable[..., Any], arguments: tuple[Any, ...], stopped: 
     theirs.close()
     try:
         return _await(line, stopped)
-    except EOFError:
+    except (EOFError, OSError):
         process.join()
         raise ProcessEndedError(
             f"The process that worked it out ended by itself (status {process.exitcode}); "

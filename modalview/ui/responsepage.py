@@ -119,7 +119,7 @@ class ResponsePage(ChartPage):
         machine = self._machine(result)
         self._offer(machine, contents)
         content = contents.response_content(result, self._chosen(machine, contents))
-        self._show_tables(result, machine, contents)
+        self._show_tables(result, machine, content)
         self.room.notes.setText("\n".join((*_left_out(machine, result), *result.notes, *result.evidence)))
         if content is None:
             self.show_missing(_no_curve(machine))
@@ -175,14 +175,13 @@ class ResponsePage(ChartPage):
         quantity = self.choice.quantity.currentData()
         return contents.Choice(machine.machine, place or "", quantity, self.system)
 
-    def _show_tables(self, result: Any, machine: Any, contents: Any) -> None:
+    def _show_tables(self, result: Any, machine: Any, content: Any) -> None:
         from modalview.drawing import responsecharttable as tables  # noqa: PLC0415  (numpy is late)
 
-        table = tables.amplitude_table(result, self._chosen(machine, contents))
-        if table is None:
+        if content is None:
             self.amplitudes.show_figures((), ())
         else:
-            self._fill(self.amplitudes, table)
+            self._fill(self.amplitudes, tables.amplitude_table(machine, content))
         self._fill(
             self.supports,
             tables.support_table(result, machine.machine, self._shown_speed(machine), self.system),

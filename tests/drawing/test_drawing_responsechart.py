@@ -24,6 +24,7 @@ from modalview.drawing.responsechartcontent import (
 )
 from modalview.drawing.responsecharttable import (
     NO_STEADY,
+    ResponseTable,
     amplitude_table,
     at_speed,
     support_table,
@@ -31,11 +32,24 @@ from modalview.drawing.responsecharttable import (
 )
 from modalview.model.parts import Model, Motion
 from modalview.model.values import Entry
-from modalview.study.response_results import ACCELERATION, DISPLACEMENT, PEAK_TO_PEAK, QUANTITIES, VELOCITY
+from modalview.study.response_results import (
+    ACCELERATION,
+    DISPLACEMENT,
+    PEAK_TO_PEAK,
+    QUANTITIES,
+    VELOCITY,
+    ResponseResult,
+)
 from modalview.units import quantities as q
 
 FAN = Choice("drive", "fan")
-SIZES = ((640.0, 190.0, 1.0), (640.0, 260.0, 1.0), (660.0, 340.0, 1.5), (1400.0, 700.0, 1.0), (900.0, 560.0, 2.0))
+SIZES = (
+    (640.0, 190.0, 1.0),
+    (640.0, 260.0, 1.0),
+    (660.0, 340.0, 1.5),
+    (1400.0, 700.0, 1.0),
+    (900.0, 560.0, 2.0),
+)
 
 
 def content(ratio: float = 0.02, orders: int = 2, choice: Choice = FAN, model: Model | None = None):
@@ -46,6 +60,13 @@ def content(ratio: float = 0.02, orders: int = 2, choice: Choice = FAN, model: M
 
 def texts(chart) -> list[Text]:
     return [item for item in chart.drawing.items if isinstance(item, Text)]
+
+
+def table_of(result: ResponseResult) -> ResponseTable:
+    found, shown = machine_of(result, "drive"), response_content(result, FAN)
+    assert found is not None
+    assert shown is not None
+    return amplitude_table(found, shown)
 
 
 def fixed(rpm: str = "2950 rpm") -> Model:
@@ -183,8 +204,7 @@ def test_between_samples_the_curve_is_read_and_infinity_only_at_its_own_speed():
 
 
 def test_table_of_a_single_speed_tells_the_spread_of_damping():
-    table = amplitude_table(response(fixed()), FAN)
-    assert table is not None
+    table = table_of(response(fixed()))
     assert table.headings == ("excitation", "at 2950 rpm, mm/s rms", "half to double damping")
     assert [row.label for row in table.rows][-1] == "all, summed"
     assert table.rows[-1].cells[1].count(" to ") == 1
@@ -192,16 +212,14 @@ def test_table_of_a_single_speed_tells_the_spread_of_damping():
 
 
 def test_table_of_a_range_tells_the_worst_and_where():
-    table = amplitude_table(response(), FAN)
-    assert table is not None
+    table = table_of(response())
     assert table.headings == ("excitation", "worst of 600 to 1480 rpm, mm/s rms", "at rpm")
     assert all(len(row.cells) == 2 for row in table.rows)
 
 
 def test_table_says_unbounded():
     running = fan(Entry(f"{NATURAL_RPM} rpm", NATURAL_RPM * math.pi / 30))
-    table = amplitude_table(response(running, ratio=0.0, orders=1), FAN)
-    assert table is not None
+    table = table_of(response(running, ratio=0.0, orders=1))
     assert table.rows[0].infinite
     assert table.rows[0].cells[0] == NO_STEADY
     supports = support_table(response(running, ratio=0.0, orders=1), "drive", NATURAL_RPM, "SI")
