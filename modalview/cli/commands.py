@@ -25,7 +25,8 @@ from modalview.study.damped import damped
 from modalview.study.near import require_all_modes
 
 Prepare = Callable[[argparse.ArgumentParser], None]
-PICTURES = ("sheet", "scale", "mode", "plane")
+PICTURES = ("sheet", "scale", "mode", "plane", "response", "speeds", "mounts")
+QUANTITIES = ("displacement peak", "displacement peak-to-peak", "velocity rms", "acceleration rms")
 VIEWS = ("turned", "front", "side", "top")
 
 
@@ -129,6 +130,13 @@ def _prepare_picture(parser: argparse.ArgumentParser) -> None:
     parser.add_argument("-o", "--output", type=Path, required=True, metavar="OUT.png", help="where it goes")
     parser.add_argument("--of", choices=PICTURES, default="sheet", help="what it shows (default: sheet)")
     parser.add_argument("--mode", type=whole, metavar="N", help="the mode shown, from 1 (with --of mode)")
+    parser.add_argument("--machine", metavar="ID", help="whose response or speeds (default: the first)")
+    parser.add_argument(
+        "--quantity",
+        choices=QUANTITIES,
+        metavar='"velocity rms"',
+        help="with --of response; or " + ", ".join(f'"{one}"' for one in QUANTITIES if one != "velocity rms"),
+    )
     parser.add_argument("--size", default="2400x1600", metavar="WxH", help="in pixels (default: 2400x1600)")
     parser.add_argument("--dark", action="store_true", help="dark colours")
     parser.add_argument("--view", choices=VIEWS, help="of a model in space (default: turned)")

@@ -3,6 +3,7 @@
 import argparse
 import re
 
+from modalview.cli.chartpictures import CHARTS, chart_drawing
 from modalview.cli.printing import progress
 from modalview.cli.texts import frequency_text, range_text
 from modalview.drawing.complexplane import plane_drawing
@@ -56,10 +57,13 @@ def _size(text: str) -> tuple[int, int]:
 def _drawing(model: Model, words: argparse.Namespace, width: int, height: int) -> Drawing:
     if words.mode is not None and words.of != "mode":
         raise UsageError("--mode goes with --of mode")
+    _refuse_elsewhere(words)
     viewpoint = _viewpoint(model, words)
     if words.of == "sheet":
         geometry = sheet_geometry(model, width, height, viewpoint=viewpoint)
         return sheet_drawing(geometry, _title_at_rest(model))
+    if words.of in CHARTS:
+        return chart_drawing(model, words, width, height)
     solution = solve(Request(model, progress=progress))
     if words.of == "plane":
         damping = damped(Request(model), solution)
@@ -72,6 +76,13 @@ def _drawing(model: Model, words: argparse.Namespace, width: int, height: int) -
     geometry = sheet_geometry(model, width, height - CAPTION, viewpoint=viewpoint)
     drawing = moved(geometry, mode.motion, 1.0, 0.0, _title(solution.outlook))
     return captioned(drawing, mode_caption(mode))
+
+
+def _refuse_elsewhere(words: argparse.Namespace) -> None:
+    if words.machine is not None and words.of not in ("response", "speeds"):
+        raise UsageError("--machine goes with --of response and --of speeds")
+    if words.quantity is not None and words.of != "response":
+        raise UsageError("--quantity goes with --of response")
 
 
 def _viewpoint(model: Model, words: argparse.Namespace) -> Viewpoint:

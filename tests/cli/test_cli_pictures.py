@@ -98,3 +98,37 @@ def test_a_view_that_has_no_meaning_is_refused(file, words, told, capsys, tmp_pa
     assert main(["picture", str(file), "-o", str(out), *words, "--view", "front"]) == 2
     assert told in capsys.readouterr().err
     assert not out.exists()
+
+
+@pytest.mark.parametrize(
+    ("file", "of", "told", "also"),
+    [
+        (PUMP, "response", "Response · Cooling-water pump P-3, as built", "mm/s rms"),
+        (PUMP, "speeds", "Speeds · Cooling-water pump P-3, as built", "runs at 2 950 rpm"),
+        (SET, "mounts", "Mounts at rest · Standby generator set, dynamic stiffness", "rear left mount"),
+    ],
+)
+def test_charts_name_the_model_and_what_they_show(drawn, file, of, told, also):
+    texts = drawn(file, "--of", of)
+    assert texts[-1] == told
+    assert also in texts
+
+
+def test_a_response_of_another_quantity(drawn):
+    assert "um peak-to-peak" in drawn(
+        PUMP, "--of", "response", "--quantity", "displacement peak-to-peak", "--machine", "pump set"
+    )
+
+
+@pytest.mark.parametrize(
+    ("file", "words", "told"),
+    [
+        (PUMP, ("--of", "speeds", "--machine", "fan"), "--machine fan: there is none; the file has pump set"),
+        (PUMP, ("--machine", "pump set"), "--machine goes with --of response and --of speeds"),
+        (PUMP, ("--of", "speeds", "--quantity", "velocity rms"), "--quantity goes with --of response"),
+        (TRAIN, ("--of", "mounts"), "only turns"),
+    ],
+)
+def test_charts_that_cannot_be_drawn_say_why(capsys, file, words, told):
+    assert main(["picture", str(file), "-o", "x.png", *words]) == 2
+    assert told in " ".join(capsys.readouterr().err.split())
