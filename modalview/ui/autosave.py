@@ -59,6 +59,7 @@ class Autosave(QObject):
         document.model_changed.connect(self._on_edited)
         document.clean_changed.connect(self._on_clean)
         document.opened.connect(self._on_opened)
+        document.saved.connect(self._on_saved)
 
     def _on_edited(self) -> None:
         self._edited = time.time()
@@ -75,6 +76,11 @@ class Autosave(QObject):
             self._start()
         else:
             self._drop()
+
+    def _on_saved(self) -> None:
+        """Keep edits made during a save at once: what was kept before is older than the file now."""
+        if self._document.modified:
+            self.keep()
 
     def _start(self) -> None:
         if not self._timer.isActive() and not self._closed:

@@ -2,6 +2,7 @@
 
 import time
 from collections.abc import Sequence
+from dataclasses import dataclass
 from pathlib import Path
 
 from PySide6.QtCore import QObject, Signal
@@ -15,10 +16,36 @@ from modalview.store import FileStamp, open_model, save_model
 from modalview.ui.commands import EditCommand, Together
 
 
+@dataclass(frozen=True, slots=True, eq=False)
+class Save:
+    """One saving: the model as it was when it was asked for, which no edit can change.
+
+    Parameters
+    ----------
+    model : Model
+    path : Path
+    known : FileStamp or None
+        What the file must still hold; None writes over whatever is there.
+    clean : bool
+        Whether there was nothing to save.
+    """
+
+    model: Model
+    path: Path
+    known: FileStamp | None
+    clean: bool
+
+    def write(self) -> FileStamp:
+        """Write the file, in any thread; raises what ``store.save_model`` raises."""
+        return save_model(self.model, self.path, known=self.known)
+
+
 class Document(QObject):
     """One model in the window.
 
-    ``model`` is None while nothing is open. ``clean_changed`` of the stack alone says "modified".
+    ``model`` is None while nothing is open. The clean mark of the stack alone says "modified"; it is set when
+    a save begins, so that the stack itself keeps track of what was saved while edits go on, and nothing is
+    called saved before the file is written.
     """
 
     opened = Signal()  # another model is in the window
@@ -35,12 +62,21 @@ class Document(QObject):
         self.stamp: FileStamp | None = None  # the file when it was last opened or saved
         self.saved_at: float | None = None
         self.stack = QUndoStack(self)
-        self.stack.cleanChanged.connect(self.clean_changed)
+        self.stack.cleanChanged.connect(self._on_clean)
+        self._save: Save | None = None  # under way
 
     @property
     def modified(self) -> bool:
-        """Whether there is something to save."""
-        return not self.stack.isClean()
+        """Whether there is something to save, or being saved."""
+        return self._save is not None or not self.stack.isClean()
+
+    @property
+    def saving(self) -> bool:
+        """Whether a save has begun that has not ended."""
+        return self._save is not None
+
+    def _on_clean(self, clean: bool) -> None:  # noqa: FBT001  (a slot)
+        self.clean_changed.emit(clean and self._save is None)
 
     @property
     def name(self) -> str:
@@ -74,24 +110,44 @@ class Document(QObject):
     ) -> None:
         self.model = model
         self.path, self.example, self.stamp, self.recovered = path, example, stamp, recovered
-        self.saved_at = None
+        self.saved_at = self._save = None
         self.stack.clear()
         if recovered:
             self.stack.resetClean()
         self.opened.emit()
 
-    def save(self, path: Path, *, overwrite: bool = False) -> None:
-        """Save under a path; FileChangedError when its file holds something else, unless ``overwrite``."""
-        if self.model is None:
-            return
+    def begin_save(self, path: Path, *, overwrite: bool = False) -> Save:
+        """Return what is to be written under a path, and then to be told to ``end_save``.
+
+        FileChangedError when the file holds something else for certain, unless ``overwrite``.
+        """
         guarded = path == self.path and not overwrite
-        known = self.stamp if guarded else None
         if guarded and self.recovered and path.exists():
             raise FileChangedError(f"{path} holds what was last saved, not what was recovered")
-        self.stamp = save_model(self.model, path, known=known)
-        self.path, self.example, self.recovered = path, False, False
-        self.saved_at = time.monotonic()
+        self._save = Save(self.model, path, self.stamp if guarded else None, self.stack.isClean())
+        self.stack.blockSignals(True)
         self.stack.setClean()
+        self.stack.blockSignals(False)
+        return self._save
+
+    def end_save(self, save: Save, written: FileStamp | None) -> None:
+        """Take in how a save ended: with the stamp of the file, or with None where it failed.
+
+        Edits made meanwhile stay modified. After one that failed the model counts as modified, unless there
+        was nothing to save. What was begun for another model that was open then changes nothing.
+        """
+        if save is not self._save:
+            return
+        self._save = None
+        if written is None:
+            if not save.clean:
+                self.stack.resetClean()
+            self.clean_changed.emit(self.stack.isClean())
+            return
+        self.stamp = written
+        self.path, self.example, self.recovered = save.path, False, False
+        self.saved_at = time.monotonic()
+        self.clean_changed.emit(self.stack.isClean())
         self.saved.emit()
 
     def lose_file(self) -> None:

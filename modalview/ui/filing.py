@@ -1,6 +1,7 @@
 """Opening and saving as a conversation: what is asked, and what happens then."""
 
 from collections.abc import Callable
+from functools import partial
 from pathlib import Path
 from typing import Any
 
@@ -12,7 +13,7 @@ from modalview.model.parts import Model
 from modalview.store import FileStamp, open_model
 from modalview.ui import settings as names
 from modalview.ui.dialogs import TextDialog, ask
-from modalview.ui.document import Document
+from modalview.ui.document import Document, Save
 from modalview.ui.errand import Errand
 from modalview.ui.examples import SUFFIX
 from modalview.ui.settings import Settings
@@ -31,13 +32,31 @@ class Filing(QObject):
         super().__init__(window)
         self._document, self._settings, self._window = document, settings, window
         self.reading = Errand(self)
+        self.saving = Errand(self)
+        self._after_saving: list[Then] = []
         # Brings the window to the front that has a file open already; there may be several windows.
         self.shown_elsewhere: Callable[[Path], bool] = lambda _path: False
         # Puts the model aside as a recovery; False where nothing can be kept.
         self.put_aside: Callable[[], bool] | None = None
 
+    @property
+    def busy(self) -> bool:
+        """Whether a file is being read or written."""
+        return self.reading.busy or self.saving.busy
+
+    def close(self) -> None:
+        """Give up what is being read, and wait for what is being written."""
+        self.reading.close()
+        self.saving.close()
+
     def guard(self, then: Then) -> None:
-        """Do something that would lose unsaved changes, after asking what to do with them."""
+        """Do something that would lose unsaved changes, after asking what to do with them.
+
+        A save under way is waited for; where it fails, its message is all that comes.
+        """
+        if self.saving.busy:
+            self._after_saving.append(partial(self.guard, then))
+            return
         if not self._document.modified:
             then()
             return
@@ -138,18 +157,52 @@ class Filing(QObject):
         dialog.open()
 
     def _write(self, path: Path, then: Then | None, *, overwrite: bool = False) -> None:
+        """Write in a thread; a save that is asked for meanwhile follows when this one succeeded."""
+        if self._document.model is None:
+            return
+        if self.saving.busy:
+            self._after_saving.append(partial(self._write_again, path, then, overwrite=overwrite))
+            return
         try:
-            self._document.save(path, overwrite=overwrite)
+            save = self._document.begin_save(path, overwrite=overwrite)
         except FileChangedError:
             self._ask_over(path, then)
-        except FaultsError as error:
+            return
+        self.saving.run(
+            f"Saving {path.name}…",
+            lambda _stopped: save.write(),
+            lambda written, error: self._on_written(save, written, error, then),
+        )
+
+    def _write_again(self, path: Path, then: Then | None, *, overwrite: bool) -> None:
+        """Write what was edited during a save; a second copy of the same would only displace the backup."""
+        if self._document.modified or path != self._document.path:
+            self._write(path, then, overwrite=overwrite)
+        elif then is not None:
+            then()
+
+    def _on_written(
+        self, save: Save, written: FileStamp | None, error: Exception | None, then: Then | None
+    ) -> None:
+        self._document.end_save(save, written)
+        waiting, self._after_saving = self._after_saving, []
+        if error is not None:
+            self._tell_unsaved(error, save.path, then)
+            return
+        self._remember(save.path)
+        for one in (then, *waiting):
+            if one is not None:
+                one()
+
+    def _tell_unsaved(self, error: Exception, path: Path, then: Then | None) -> None:
+        if isinstance(error, FileChangedError):
+            self._ask_over(path, then)
+        elif isinstance(error, FaultsError):
             self._tell_unfinished(error, then)
-        except InputError as error:
+        elif isinstance(error, InputError):
             self._tell("The model was not saved.", error)
         else:
-            self._remember(path)
-            if then is not None:
-                then()
+            raise error
 
     def _ask_over(self, path: Path, then: Then | None) -> None:
         recovered = self._document.recovered

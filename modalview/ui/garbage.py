@@ -3,9 +3,13 @@
 import gc
 from collections.abc import Iterator
 from contextlib import contextmanager
+from threading import Lock
 
 # Containers made in one go that are worth to be left out of all later searches for garbage.
 MANY_OBJECTS = 20_000
+
+_change = Lock()
+_inside = 0
 
 
 @contextmanager
@@ -14,13 +18,23 @@ def few_collections() -> Iterator[None]:
 
     A search through all objects holds the interpreter lock: 3 ms for a model of 333 bodies, a third of a
     second for one of 100,000, again and again while it is read. A model has no cycles: it goes without.
+    Several threads may be inside at a time; searches begin again when the last has left.
     """
     before = gc.get_count()[0]
-    gc.disable()
+    _step(1)
     try:
         yield
     finally:
-        many = gc.get_count()[0] - before > MANY_OBJECTS
-        gc.enable()
-        if many:
-            gc.freeze()
+        if gc.get_count()[0] - before > MANY_OBJECTS:
+            gc.freeze()  # before the first search, which would go through all of it
+        _step(-1)
+
+
+def _step(by: int) -> None:
+    global _inside  # noqa: PLW0603  (the switch is one for the whole process too)
+    with _change:
+        _inside += by
+        if _inside:
+            gc.disable()
+        else:
+            gc.enable()

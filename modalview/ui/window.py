@@ -76,6 +76,7 @@ class Window(Frame):
         self.document.clean_changed.connect(lambda clean: self.setWindowModified(not clean))
         self.document.saved.connect(self.on_saved)
         self.filing.reading.busy_changed.connect(self.show_reading)
+        self.filing.saving.busy_changed.connect(self.show_reading)
         self._patience.timeout.connect(lambda: self._tell_reading(self._patience.property("what")))
         self.analysis.outlook_changed.connect(self.show_known)
         self.analysis.solution_changed.connect(self.show_modes)
@@ -121,7 +122,7 @@ class Window(Frame):
     # The model
 
     def show_reading(self, what: str) -> None:
-        """Say that a file is being read, if that takes long; the window stays in use."""
+        """Say that a file is being read or written, if that takes long; the window stays in use."""
         self._patience.setProperty("what", what)
         if what:
             self._patience.start()
@@ -447,7 +448,9 @@ class Window(Frame):
         self._settings.set(names.GEOMETRY, self.saveGeometry())
         if self.autosave is not None:
             self.autosave.close()
-        self.filing.reading.close()
+        self.filing.close()
+        self.watch.close()
+        self.disk_strip.close_thread()
         self._worker.close()
         for place in (self.sheet, self.parts.lines, self.modes.row.card, self.damped.row.card):
             place.close_threads()

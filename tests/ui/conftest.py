@@ -94,9 +94,15 @@ def pump(window, qtbot) -> Window:
 
 
 def settle(qtbot, window: Window) -> None:
-    """Let a file be read and the study of the model on the sheet come to its end."""
-    qtbot.waitUntil(lambda: not window.filing.reading.busy, timeout=5000)
+    """Let a file be read or written and the study of the model on the sheet come to its end."""
+    qtbot.waitUntil(lambda: not window.filing.busy, timeout=5000)
     analysis = window.analysis
     qtbot.waitUntil(lambda: not analysis.looking and not analysis.finding, timeout=5000)
     if analysis.automatic and analysis.refusal is None:
         qtbot.waitUntil(lambda: analysis.solution_current, timeout=5000)
+
+
+def save(qtbot, window: Window) -> None:
+    """Save and wait until the file is written, or a question is asked."""
+    window.on_save()
+    qtbot.waitUntil(lambda: not window.filing.saving.busy, timeout=5000)

@@ -3,7 +3,7 @@
 import errno
 
 import pytest
-from conftest import PUMP, settle
+from conftest import PUMP, save, settle
 
 from modalview.model.edits import SetField
 from modalview.model.rules import faults
@@ -72,7 +72,7 @@ def test_the_clock_runs_from_the_first_edit_not_the_last(own):
 def test_saving_lets_go(own, session, qtbot):
     with qtbot.waitSignal(own.autosave.kept):
         own.document.type_value(BASE_SUPPORT, "340 kN/mm")
-    own.on_save()
+    save(qtbot, own)
     qtbot.waitUntil(lambda: kept(session) is None)
 
 
@@ -94,11 +94,11 @@ def test_closing_in_order_lets_go(own, session, qtbot):
     assert kept(session) is None
 
 
-def test_undo_goes_on_after_a_save(own):
+def test_undo_goes_on_after_a_save(own, qtbot):
     saved = own.document.model
     own.document.type_value(BASE_SUPPORT, "340 kN/mm")
     own.document.type_value(BASE_SUPPORT, "350 kN/mm")
-    own.on_save()
+    save(qtbot, own)
     edited = own.document.model
     assert not own.document.modified
     own.document.stack.undo()
@@ -142,3 +142,13 @@ def test_the_folder_can_be_another_one(monkeypatch, tmp_path):
     assert recovery_folder() == tmp_path / "recovery"
     monkeypatch.delenv(FOLDER_VARIABLE)
     assert recovery_folder().name == "recovery"
+
+
+def test_edits_made_during_a_save_are_kept_when_it_ends(own, session, qtbot):
+    own.document.type_value(BASE_SUPPORT, "340 kN/mm")
+    own.autosave._timer.setInterval(10_000_000)
+    own.on_save()
+    own.document.type_value(BASE_SUPPORT, "350 kN/mm")
+    with qtbot.waitSignal(own.autosave.kept):
+        qtbot.waitUntil(lambda: not own.filing.saving.busy)
+    assert kept(session) == own.document.model

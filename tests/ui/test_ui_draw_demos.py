@@ -179,7 +179,7 @@ def saved(person, tmp_path, qtbot) -> Solution:
     path = tmp_path / "drawn.keepclear"
     settle(qtbot, person.window)
     person.save_as(path)
-    qtbot.waitUntil(path.exists, timeout=2000)
+    qtbot.waitUntil(lambda: path.exists() and not person.window.filing.busy, timeout=2000)
     assert not person.window.document.modified
     solution = solve(Request(read_model(path)))
     assert person.window.analysis.outlook.verdict == solution.outlook.verdict

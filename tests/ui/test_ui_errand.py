@@ -81,6 +81,14 @@ def test_many_objects_are_left_out_of_later_searches_for_garbage(monkeypatch):
     assert gc.get_freeze_count() >= frozen + len(kept)
 
 
+def test_searches_for_garbage_begin_when_the_last_thread_has_left():
+    with garbage.few_collections():
+        with garbage.few_collections():
+            pass
+        assert not gc.isenabled()
+    assert gc.isenabled()
+
+
 def test_of_two_files_opened_at_once_the_second_is_shown(window, qtbot):
     window.filing.open(PUMP, example=True)
     window.filing.open(FAN, example=True)

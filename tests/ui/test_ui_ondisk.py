@@ -1,10 +1,14 @@
 """A file changed, moved or deleted by somebody else is told, and nothing is lost over it."""
 
+import difflib
+from threading import Event
+
 import pytest
-from conftest import FAN, PUMP, settle
+from conftest import FAN, PUMP, save, settle
 from PySide6.QtCore import QEvent
 from PySide6.QtWidgets import QMessageBox
 
+from modalview.errors import CancelledError
 from modalview.store import read_model
 from modalview.ui import ondisk
 from modalview.ui.dialogs import TextDialog
@@ -26,6 +30,11 @@ def own(window, tmp_path, qtbot):
 def told(window, qtbot, state):
     qtbot.waitUntil(lambda: window.watch.state is state)
     assert window.disk_strip.isHidden() is (state is State.SAME)
+
+
+def look(window, qtbot):
+    window.watch.look()
+    qtbot.waitUntil(lambda: not window.watch.looking.busy)
 
 
 def change(window, to=FAN):
@@ -59,7 +68,7 @@ def test_kept_apart_it_is_told_no_more_until_it_changes_again(own, qtbot):
     told(own, qtbot, State.CHANGED)
     own.disk_strip.mine.click()
     told(own, qtbot, State.SAME)
-    own.watch.look()
+    look(own, qtbot)
     assert own.watch.state is State.SAME
     own.document.path.write_text("{}", encoding="utf-8")
     told(own, qtbot, State.CHANGED)
@@ -79,10 +88,45 @@ def test_versions_can_be_compared(own, qtbot):
     own.document.path.write_text(text.replace('"620 kg"', '"640 kg"'), encoding="utf-8")
     told(own, qtbot, State.CHANGED)
     own.disk_strip.compare.click()
+    qtbot.waitUntil(lambda: not own.disk_strip.comparing.busy)
     (dialog,) = own.findChildren(TextDialog)
     lines = dialog.text.toPlainText().splitlines()
     assert [line[0] + line.split('"')[3] for line in lines if "kg" in line] == ["-640 kg", "+620 kg"]
     dialog.close()
+
+
+def test_comparing_can_be_given_up(own, qtbot, monkeypatch):
+    let = Event()
+    monkeypatch.setattr(ondisk, "_compared", lambda *_: str(let.wait(5)))
+    change(own)
+    told(own, qtbot, State.CHANGED)
+    strip = own.disk_strip
+    strip.compare.click()
+    strip._patience.timeout.emit()
+    assert strip.compare.text() == "Stop comparing"
+    strip.compare.click()
+    assert not strip.comparing.busy
+    assert strip.compare.text() == "Compare…"
+    let.set()
+    strip.close_thread()
+    qtbot.wait(0)
+    assert own.findChildren(TextDialog) == []
+
+
+def test_comparing_stops_between_two_searches():
+    asked = []
+    with pytest.raises(CancelledError):
+        ondisk.differences("a\nb", "a\nc", stopped=lambda: not asked.append(1))
+    assert asked == [1]
+
+
+def test_what_differs_is_told_with_the_places_and_as_much_as_is_read(monkeypatch):
+    mine = "\n".join(map(str, range(20)))
+    theirs = mine.replace("5\n", "", 1).replace("12", "twelve").replace("19", "19\n20")
+    usual = difflib.unified_diff(theirs.splitlines(), mine.splitlines(), lineterm="", n=1)
+    assert ondisk.differences(theirs, mine).splitlines() == list(usual)[2:]
+    monkeypatch.setattr(ondisk, "MOST_SHOWN", 3)
+    assert ondisk.differences(theirs, mine).splitlines()[3:] == ["… and 9 more lines"]
 
 
 def test_long_texts_are_not_compared(monkeypatch):
@@ -113,13 +157,12 @@ def test_a_file_moved_away_and_back_is_told_no_more(own, qtbot, tmp_path):
 
 def test_a_file_replaced_by_its_like_is_no_change(own, qtbot, tmp_path):
     looked = []
-    look = own.watch.look
     own.watch._settle.timeout.connect(lambda: looked.append(1))
     beside = tmp_path / "x.tmp"
     beside.write_bytes(PUMP.read_bytes())
     beside.replace(own.document.path)
     qtbot.waitUntil(lambda: bool(looked))
-    look()
+    look(own, qtbot)
     assert own.watch.state is State.SAME
     change(own)  # the watch follows the new file
     told(own, qtbot, State.CHANGED)
@@ -129,8 +172,9 @@ def test_own_saves_are_no_change(own, qtbot):
     looked = []
     own.watch._settle.timeout.connect(lambda: looked.append(1))
     own.document.type_value(BASE_SUPPORT, "340 kN/mm")
-    own.on_save()
+    save(qtbot, own)
     qtbot.waitUntil(lambda: bool(looked))
+    look(own, qtbot)
     assert own.watch.state is State.SAME
 
 

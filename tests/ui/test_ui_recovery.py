@@ -5,7 +5,7 @@ import time
 from dataclasses import replace
 
 import pytest
-from conftest import PUMP, settle
+from conftest import PUMP, save, settle
 from PySide6.QtWidgets import QLabel, QMessageBox, QPushButton
 
 from modalview.model.parts import Body, Model
@@ -121,16 +121,17 @@ def test_saving_it_asks_as_for_a_changed_file(start, edited, own, qtbot):
     press(windows._recovered, "Open the recovered one")
     (window,) = windows.all
     before = own.read_bytes()
-    window.on_save()
+    save(qtbot, window)
     (box,) = window.findChildren(QMessageBox)
     assert "not what was recovered" in box.text()
     assert own.read_bytes() == before
     next(one for one in box.buttons() if one.text() == "Overwrite").click()
+    qtbot.waitUntil(lambda: not window.filing.saving.busy)
     assert read_model(own) == edited.model
     assert own.with_name("pump.keepclear.bak").read_bytes() == before
     assert not window.document.recovered
     window.document.type_value(("title",), "Pump P-4")
-    window.on_save()
+    save(qtbot, window)
     assert not window.document.modified, "the next save asks no more"
     settle(qtbot, window)
 

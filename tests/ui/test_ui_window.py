@@ -1,7 +1,7 @@
 from pathlib import Path
 
 import pytest
-from conftest import FAN, PUMP, settle
+from conftest import FAN, PUMP, save, settle
 from pen import Pen
 from PySide6.QtCore import QMimeData, QPoint, QPointF, Qt, QUrl
 from PySide6.QtGui import QDropEvent
@@ -192,7 +192,7 @@ def test_opening_another_file_with_changes_saves_first_when_asked(window, qtbot,
     window.document.type_value(BASE_SUPPORT, "340 kN/mm")
     window.filing.open(FAN, example=True)
     click(window, "Save")
-    settle(qtbot, window)
+    settle(qtbot, window)  # written, then read
     assert read_model(own).links[2].stiffness.text == "340 kN/mm"
     assert window.document.model == read_model(FAN)
 
@@ -204,12 +204,13 @@ def test_a_file_changed_on_disk_is_not_overwritten_unasked(window, qtbot, tmp_pa
     window.document.type_value(BASE_SUPPORT, "340 kN/mm")
     other = FAN.read_bytes()
     own.write_bytes(other)
-    window.on_save()
+    save(qtbot, window)
     click(window, "Cancel")
     assert own.read_bytes() == other
     assert window.document.modified
-    window.on_save()
+    save(qtbot, window)
     click(window, "Overwrite")
+    qtbot.waitUntil(lambda: not window.filing.saving.busy)
     assert read_model(own) == window.document.model
     assert not window.document.modified
     settle(qtbot, window)
@@ -221,6 +222,7 @@ def test_a_save_that_fails_says_why_and_stays_modified(window, qtbot, tmp_path):
     window.document.open(own)
     window.document.type_value(BASE_SUPPORT, "340 kN/mm")
     window.filing._write(tmp_path / "no folder" / "x.keepclear", None)
+    qtbot.waitUntil(lambda: not window.filing.saving.busy)
     click(window, "Close")
     assert window.document.modified
     settle(qtbot, window)

@@ -174,6 +174,7 @@ def test_a_half_drawn_model_can_be_put_aside_instead_of_being_lost(windows, firs
     first.document.recover(half_drawn, tmp_path / "x.keepclear", None, example=False)
     first.close()
     answer(first, "Save")
+    qtbot.waitUntil(lambda: not first.filing.saving.busy)
     (box,) = [one for one in first.findChildren(QMessageBox) if one.isVisible()]
     assert "mass" in box.informativeText()
     answer(first, "Put aside")
