@@ -4,7 +4,7 @@ import argparse
 from collections.abc import Callable
 from pathlib import Path
 
-from modalview.cli import documents, imports, matrices, mounts, near, response, speeds, texts
+from modalview.cli import changes, documents, imports, matrices, mounts, near, response, speeds, texts, tune
 from modalview.cli.damped import damped_document, damped_text
 from modalview.cli.printing import (
     OK,
@@ -159,7 +159,9 @@ COMMANDS: dict[str, tuple[str, Prepare]] = {
     "check": ("prove whether any speed or order meets a mode, over all tolerances", _prepare_check),
     "speeds": ("tell which speeds are clear of every mode, over all tolerances", speeds.prepare),
     "response": ("compute the motion and the forces that the excitations cause", response.prepare),
+    "changes": ("find what clears every check, over all tolerances and load cases", changes.prepare),
     "mounts": ("tell what every spring and mount carries at rest", mounts.prepare),
+    "tune": ("tune chosen values to measured peaks, and tell what the peaks cannot tell", tune.prepare),
     "import": ("make a model file of a table of nodes and a table of springs", imports.prepare),
     "picture": ("draw the sheet, a mode, the scale or the complex plane, without a screen", _prepare_picture),
 }

@@ -26,6 +26,7 @@ def test_readme_shows_output():
         "speeds",
         "response",
         "mounts",
+        "changes",
     ]
 
 
@@ -107,6 +108,7 @@ BAND = ("--frequencies", "1 Hz", "--margin", "3 %")
         ("modes", *MATRICES, "--near", "1 Hz", "--count", "1"),
         *(("speeds", file) for file in (*PUMP, *TRAIN)),
         ("mounts", *GENSET),
+        *(("changes", file) for file in (*PUMP, *RETROFIT)),
         *(("response", file) for file in (*PUMP, *TRAIN, *RETROFIT)),
     ],
 )
