@@ -124,6 +124,11 @@ class Damped:
             return self.route.method
         return "sparse factorization at every frequency"
 
+    @property
+    def by_factors(self) -> bool:
+        """Whether every frequency costs a factorization, and resonances are not known."""
+        return isinstance(self.route, BySparse)
+
     def solve(self, omega: Array, load: Load) -> SteadyMotion:
         """Return the motion (N, w) at angular frequencies (w,) above zero, per unit of the load."""
         w = np.asarray(omega, dtype=float)

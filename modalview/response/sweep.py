@@ -14,6 +14,8 @@ Evaluate = Callable[[Array], Array]
 ABOUT = np.array([0.0, 0.2, 0.5, 0.8, 1.2, 1.8, 2.7, 4.0, 6.0, 9.0, 14.0, 25.0])
 # With very many resonances a coarser choice.
 MANY, COARSE = 120, np.array([0.0, 0.5, 1.0, 2.0, 5.0])
+# ... and then no two speeds nearer than this share of the narrowest half-width.
+THIN = 0.3
 # About an undamped one, in shares of its speed.
 ABOUT_UNDAMPED = np.array([0.0, 1e-6, 1e-5, 1e-4, 1e-3, 3e-3, 1e-2, 3e-2])
 # Where neighbouring values differ by more than this share, a speed is put between them...
@@ -25,6 +27,7 @@ NO_PEAK = 1e-9
 # A bracket is small enough when its ends lie below its middle by this share: the top of the parabola through
 # them is then known to a hundredth of their distance.
 FLAT = 1e-9
+ROUGH = 1e-5
 # Values that differ by less than this share of themselves are on a level.
 LEVEL = 1e-12
 # Speeds nearer than this share of themselves are one.
@@ -89,24 +92,27 @@ def starting_speeds(
     for speed, width, undamped in inside:
         steps = speed * ABOUT_UNDAMPED if undamped else width * about
         found += [speed - steps, speed + steps]
-    every = _told_apart(np.unique(np.concatenate(found)), asked)
+    widths = [width / speed for speed, width, undamped in inside if width > 0 and not undamped]
+    crowded = len(inside) > MANY and not any(undamped for _, _, undamped in inside)
+    thinned = THIN * min(widths) if crowded and widths else NARROW
+    every = _told_apart(np.unique(np.concatenate(found)), asked, thinned)
     kept: Array = every[(every >= low) & (every <= high)]
     return kept
 
 
-def _told_apart(speeds: Array, wanted: Array) -> Array:
-    """Leave out speeds that are the one before them but for rounding; of two, a wanted one stays."""
+def _told_apart(speeds: Array, wanted: Array, share: float) -> Array:
+    """Leave out speeds nearer than a share to the one before them; of two, a wanted one stays."""
     kept: list[float] = []
     for speed in speeds.tolist():
-        if kept and speed - kept[-1] <= NARROW * speed:
-            if kept[-1] not in wanted:
+        if kept and speed - kept[-1] <= share * speed:
+            if kept[-1] not in wanted and speed in wanted:
                 kept[-1] = speed
             continue
         kept.append(speed)
     return np.array(kept)
 
 
-def swept(evaluate: Evaluate, speeds: Array, sharp: Array | None = None) -> Swept:
+def swept(evaluate: Evaluate, speeds: Array, sharp: Array | None = None, *, rough: bool = False) -> Swept:
     """Compute rows over speeds, find their peaks and fill in where they are steep.
 
     Parameters
@@ -117,6 +123,8 @@ def swept(evaluate: Evaluate, speeds: Array, sharp: Array | None = None) -> Swep
         To start from, ascending.
     sharp : bool array (r,) or None
         Rows whose peaks are placed; None: all.
+    rough : bool
+        Where every speed is dear: place peaks to about 1e-5 of their half-width, without half-power marks.
 
     Returns
     -------
@@ -128,11 +136,12 @@ def swept(evaluate: Evaluate, speeds: Array, sharp: Array | None = None) -> Swep
     speeds, values = _filled(evaluate, speeds, values)
     rows = np.arange(len(values)) if sharp is None else np.flatnonzero(sharp)
     row, around = _maxima(values, rows)
-    place, height = _placed(evaluate, row, Brackets(speeds[around], values[row[:, None], around]))
+    flat = ROUGH if rough else FLAT
+    place, height = _placed(evaluate, row, Brackets(speeds[around], values[row[:, None], around], flat))
     new = np.setdiff1d(place, speeds)
     if new.size:
         speeds, values = _merged(speeds, values, new, evaluate(new))
-    halves = _half_powers(evaluate, (speeds, values), row, place, height)
+    halves = _half_powers(evaluate, (speeds, values), row, place, height) if not rough else _unmarked(row)
     tops = [
         Top(int(r), float(x), float(top), half)
         for r, x, top, half in zip(row, place, height, halves, strict=True)
@@ -205,6 +214,7 @@ class Brackets:
 
     x: Array
     y: Array
+    enough: float = FLAT
 
     def tops(self) -> Array:
         """Return the top of the parabola through 1/y^2 (exact for one lightly damped mode), inside."""
@@ -221,7 +231,7 @@ class Brackets:
         """Return which are small enough."""
         low = np.minimum(self.y[:, 0], self.y[:, 2])
         narrow = self.x[:, 2] - self.x[:, 0] <= NARROW * self.x[:, 1]
-        return np.asarray((self.y[:, 1] - low <= FLAT * self.y[:, 1]) | narrow)
+        return np.asarray((self.y[:, 1] - low <= self.enough * self.y[:, 1]) | narrow)
 
     def narrowed(self, at: Array, values: Array, which: Places) -> None:
         """Take further points (k, 3) of some brackets in and keep the three about the highest."""
@@ -254,6 +264,10 @@ def _placed(evaluate: Evaluate, row: Places, found: Brackets) -> tuple[Array, Ar
     height = evaluate(place)[row, np.arange(place.size)]
     better = height >= found.y[:, 1] * (1 - FLAT)
     return np.where(better, place, found.x[:, 1]), np.where(better, height, found.y[:, 1])
+
+
+def _unmarked(row: Places) -> list[tuple[float | None, float | None]]:
+    return [(None, None) for _ in row]
 
 
 def _half_powers(

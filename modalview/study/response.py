@@ -304,7 +304,7 @@ def _notes(dynamics: Dynamics, found: Sequence[MachineResponse]) -> tuple[str, .
     said = []
     if any(len(one.drivers) > 1 for one in found):
         said.append(SUM_NOTE)
-    if dynamics.damping.kind != NONE:
+    if dynamics.damping.kind != NONE and not dynamics.with_damping().by_factors:
         said.append(BAND_NOTE)
     if dynamics.damping.kind == RATIO:
         said.append(PARTS_NOTE)
@@ -315,7 +315,10 @@ def _notes(dynamics: Dynamics, found: Sequence[MachineResponse]) -> tuple[str, .
                 f"resonance and within {share} % of each mode's response between them."
             )
     if isinstance(dynamics.with_damping().route, BySparse):
-        said.append("The model is large: peaks narrower than the distance of the speeds may be missed.")
+        said.append(
+            "The model is large: peaks narrower than the distance of the speeds may be missed, and neither "
+            "half-power marks nor the band of half and double damping are computed."
+        )
     if dynamics.assembly.model.motion is Motion.SHAFT_TRAIN:
         said.append("Motions are rotations: rad, rad/s and rad/s2.")
     return tuple(said)

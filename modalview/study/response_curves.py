@@ -7,6 +7,7 @@ import numpy as np
 import numpy.typing as npt
 
 from modalview.model.parts import Machine
+from modalview.response.damping import NONE
 from modalview.response.dynamic import Damped, Dynamics
 from modalview.response.load import Load, Push, load_of
 from modalview.response.quantities import acceleration_rms, velocity_rms
@@ -87,7 +88,7 @@ class Sweeper:
 
     def _look(self, solver: Damped, load: Load, omega: Array) -> None:
         some = omega[:: max(1, omega.size // LOOKED_AT)][:LOOKED_AT]
-        if solver.dynamics.size * some.size > 1_000_000:
+        if solver.by_factors:
             some = some[:1]
         errors = solver.backward_error(some, load, solver.solve(some, load))
         self.worst_residual = max(self.worst_residual, float(errors.max(initial=0.0)))
@@ -102,18 +103,19 @@ class Sweeper:
                 # Of the other dampings the place alone: their peaks are not placed.
                 share = width if factor == 1 else 0.0
                 resonances += [(omega / one, share / one, bool(undamped)) for one in orders]
-        points = POINTS if self.dynamics.with_damping().resonances()[0].size else FEW_POINTS
+        points = FEW_POINTS if self.dynamics.with_damping().by_factors else POINTS
         start = starting_speeds(span, resonances, wanted, points)
 
         def evaluate(speeds: Array) -> Array:
             return self.rows(speeds, 1.0).reshape(-1, speeds.size)
 
-        return swept(evaluate, start)
+        return swept(evaluate, start, rough=self.dynamics.with_damping().by_factors)
 
     @property
     def factors(self) -> tuple[float, ...]:
-        """Dampings shown, as multiples of the one given."""
-        return (1.0,) if self.dynamics.damping.kind == "none" else (1.0, HALF, DOUBLE)
+        """Dampings shown, as multiples of the one given; of a large model that one alone."""
+        single = self.dynamics.damping.kind == NONE or self.dynamics.with_damping().by_factors
+        return (1.0,) if single else (1.0, HALF, DOUBLE)
 
 
 def curves_of(sweeper: Sweeper, found: Swept, names: Sequence[str]) -> tuple[Curve, ...]:

@@ -75,7 +75,7 @@ def test_wanted_speeds_are_there_and_none_outside_the_span():
 
 
 def test_two_speeds_that_nearly_coincide_make_no_peak_and_hide_none():
-    """Beside 1 the curve's values differ by rounding only; the peak of the displacement per w^2 is above it."""
+    """Beside 1 the values differ by rounding only; the peak of the acceleration is above it."""
     rows = oscillator(0.0625)
     twice = np.sort(
         np.concatenate([np.linspace(0.2, 3.0, 40), [1.0, 1.0 + 3e-16, 1.0 + 9e-16, 2.0, 2.0 + 5e-16]])

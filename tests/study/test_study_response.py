@@ -115,6 +115,15 @@ def test_peaks_and_half_power_marks():
     assert peak.half_power_rpm == pytest.approx((low, high), rel=1e-9)
 
 
+@pytest.mark.parametrize("zeta", [1e-5, 1e-3])
+def test_a_lightly_damped_peak_lies_on_its_true_place(zeta):
+    """To 1e-6 of itself, and its height with it."""
+    (curve,) = found(damping=f"{2 * 10 * 20 * zeta!r} N s/m").machines[0].curves
+    (peak,) = [one for one in curve.peaks if one.quantity == DISPLACEMENT]
+    assert peak.speed_rpm == pytest.approx(20 * math.sqrt(1 - 2 * zeta**2) * 30 / math.pi, rel=1e-9)
+    assert peak.value == pytest.approx(8 / 4000 / (2 * zeta * math.sqrt(1 - zeta**2)), rel=1e-6)
+
+
 def test_the_state_at_the_speed():
     (state,) = found().machines[0].states
     omega = 200 * math.pi / 30
