@@ -143,7 +143,7 @@ def _head(
         y += step
         title = f"{content.quantity} of {content.place}, {content.unit}"
         items.append(Text(8.0, y, title, Role.INK, Size.SMALL, bold=True))
-    named = content.damping.lower().startswith("damping")
+    named = "damping" in content.damping.lower()
     damping = content.damping if named or not content.damping else f"Damping: {content.damping}"
     rows = wrapped(damping, width - 20.0, text_scale) if damping else []
     for row in rows[:_MOST_DAMPING]:
@@ -346,7 +346,7 @@ def _peaks(frame: SpeedFrame, content: ResponseContent, names: _Names) -> tuple[
         if number >= MOST_PEAKS:
             continue
         text = (
-            f"without bound at {rpm_text(one.rpm)} rpm: nothing damps it"
+            f"without bound at {rpm_text(one.rpm)} rpm"
             if infinite
             else f"{figure(one.value)} at {rpm_text(one.rpm)} rpm"
         )

@@ -111,6 +111,7 @@ class ChartCanvas(QWidget):
             paint_drawing(painter, Drawing(items, size, self.text_scale), self._theme)
         if self.hasFocus():
             painter.setPen(QColor(self._theme.accent))
+            painter.setBrush(Qt.BrushStyle.NoBrush)
             painter.drawRect(self.rect().adjusted(0, 0, -1, -1))
 
     def resizeEvent(self, event: QResizeEvent) -> None:  # noqa: N802  (Qt's name)

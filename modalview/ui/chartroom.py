@@ -10,7 +10,7 @@ from modalview.ui.figuretable import FigureTable
 # In heights of a line: from this width on the tables stand beside the chart; so much of them peeps in below,
 # unless the page is lower than so much; a chart is at least so high.
 BESIDE, PEEP, LOW, LEAST = 62.0, 2.4, 18.0, 10.0
-_SHARES = (3, 2)
+_SHARES = (5, 4)
 
 
 class ChartRoom(QScrollArea):

@@ -44,7 +44,7 @@ class ResponseChoice(QWidget):
         self.machine.setVisible(len(model.machines) > 1)
         directions = _directions(model.motion)
         _fill(self.direction, [(name, name) for name in directions], keep=not anew)
-        self.direction.setVisible(len(directions) > 1)
+        self.show_direction(there=self.body is not None)
         if anew:
             _fill(self.place, [], keep=False)
 
@@ -61,6 +61,10 @@ class ResponseChoice(QWidget):
     def show_parts(self, offered: list[tuple[str, str]]) -> None:
         """Offer supports and links, for forces."""
         _fill(self.place, [(label, f"{NAMED} {one}") for label, one in offered], keep=True)
+
+    def show_direction(self, *, there: bool) -> None:
+        """Offer directions, where there are several; a place that the answer names has its own."""
+        self.direction.setVisible(there and self.direction.count() > 1)
 
     @property
     def body(self) -> str | None:

@@ -165,7 +165,7 @@ class ResponsePage(ChartPage):
         else:
             self.choice.show_places([(one.label, one.id) for one in machine.watches], model.bodies)
         force = self.choice.quantity.currentData() == contents.FORCE
-        self.choice.direction.setEnabled(not force and self.choice.body is not None)
+        self.choice.show_direction(there=not force and self.choice.body is not None)
 
     def _chosen(self, machine: Any, contents: Any) -> Any:
         watches = {one.id for one in machine.watches}

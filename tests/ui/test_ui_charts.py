@@ -219,6 +219,18 @@ def test_the_chart_is_read_by_keys_and_esc_ends_it(pump, qtbot):
     assert not page.reading.text().endswith("mm/s rms")
 
 
+def test_the_chart_stays_in_sight_while_it_is_read_by_keys(pump, qtbot):
+    page = show(pump, qtbot, "response")
+    before = page.canvas.grab().toImage()
+    pump.activateWindow()
+    page.canvas.setFocus()
+    page.canvas.read_speed(2950.0)
+    after = page.canvas.grab().toImage()
+    places = [(x, y) for x in range(4, before.width(), 5) for y in range(4, before.height(), 5)]
+    same = sum(before.pixel(x, y) == after.pixel(x, y) for x, y in places)
+    assert same > 0.9 * len(places)
+
+
 def test_the_pointer_reads_the_chart(pump, qtbot):
     page = show(pump, qtbot, "response")
     frame = page.canvas.chart.frame
