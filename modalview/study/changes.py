@@ -8,7 +8,7 @@ from time import perf_counter
 
 from modalview.advice.changes.edges import Gate, gates_of
 from modalview.advice.changes.effects import Ranges, ranges_of
-from modalview.advice.changes.least import Search
+from modalview.advice.changes.least import MOST_BOXES, Search
 from modalview.advice.changes.narrowing import narrowing
 from modalview.advice.changes.options import Base, base_of
 from modalview.advice.changes.placed import placement
@@ -33,7 +33,7 @@ WORTH = 0.95
 # So many pairs are kept as options.
 PAIRS_SHOWN = 3
 # Ceilings of a model of more modes than this are left out of the overview; ask for one value.
-MOST_CEILINGS = 200
+MOST_CEILINGS = 60
 NO_CHECKS = "Nothing to clear: give a machine its speed, its orders and the margin wanted."
 NOT_LOOKED_AT = (
     "Changed heights and places of mounts, added absorbers and barred speeds are no values: "
@@ -77,6 +77,8 @@ class ChangesRequest:
         How dear a change of a value is; 1 where none is given.
     places : tuple of Place
         Modes to be put at frequencies.
+    tolerances : bool
+        Whether tolerances to narrow are looked for too.
     """
 
     request: Request
@@ -84,6 +86,7 @@ class ChangesRequest:
     together: tuple[str, ...] = ()
     weights: tuple[tuple[str, float], ...] = ()
     places: tuple[Place, ...] = ()
+    tolerances: bool = True
 
 
 @dataclass(frozen=True, slots=True)
@@ -102,7 +105,7 @@ class Changes:
     least : tuple of LeastChange
         Of the values asked for together, or of the pairs tried.
     narrowing : Narrowing or None
-        None where no check is clear at nominal only.
+        None where no check is clear at nominal only, or it was not asked for.
     placements : tuple of Placement
     sentence : str
     notes : tuple of str
@@ -151,9 +154,9 @@ def changes(asked: ChangesRequest) -> Changes:
         variable_named(assembly, name)
     work = _Work(asked, base, gates_of(base.states), weights)
     windows, single = work.windows(variables)
-    least = work.least(single, windows) if base.states[0].bands else ()
+    least = work.least(single, variables, windows) if base.states[0].bands else ()
     work.tell("narrowing tolerances", 0.8)
-    narrow = narrowing(base, asked.request.cancelled)
+    narrow = narrowing(base, asked.request.cancelled) if asked.tolerances else None
     placed = tuple(work.placed(place) for place in asked.places)
     options = _sorted(single, least, placed, narrow)
     return Changes(
@@ -221,26 +224,39 @@ class _Work:
         return ranges_of(state) if few and self.gates else None
 
     def least(
-        self, single: Sequence[tuple[Variable, Option]], windows: Sequence[ValueWindows]
+        self,
+        single: Sequence[tuple[Variable, Option]],
+        variables: Sequence[Variable],
+        windows: Sequence[ValueWindows],
     ) -> tuple[LeastChange, ...]:
         """Return the least change of the values asked for together, or of pairs that matter."""
         assembly = self.base.states[0].assembly
         if self.asked.together:
             chosen = variables_named(assembly, self.asked.together)
-            return (self._least(chosen, 100_000),)
+            return (self._least(chosen, MOST_BOXES),)
         if self.base.clear:
             return ()
         ranked = sorted(single, key=lambda one: one[1].amount)
         matter = list({one.id: one for one, _ in ranked}.values())
-        others = [variable_named(assembly, one.value) for one in windows if not one.windows]
-        cheapest = min((option.amount for _, option in single), default=math.inf)
-        tried = [self._least(pair, BOXES_PER_PAIR, cheapest * WORTH) for pair in _pairs([*matter, *others])]
+        others = [one for one, found in zip(variables, windows, strict=True) if not found.windows]
+        cheapest = WORTH * min((option.amount for _, option in single), default=math.inf)
+        pairs = list(_pairs([*matter, *others]))
+        tried = [
+            self._least(pair, BOXES_PER_PAIR, cheapest, (i / len(pairs), (i + 1) / len(pairs)))
+            for i, pair in enumerate(pairs)
+        ]
         found = [one for one in tried if one.option is not None]
         return tuple(sorted(found, key=lambda one: one.amount)[:PAIRS_SHOWN])
 
-    def _least(self, chosen: Sequence[Variable], boxes: int, below: float = math.inf) -> LeastChange:
+    def _least(
+        self,
+        chosen: Sequence[Variable],
+        boxes: int,
+        below: float = math.inf,
+        shares: tuple[float, float] = (0.0, 1.0),
+    ) -> LeastChange:
         def told(what: str, share: float) -> None:
-            self.tell(what, 0.6 + 0.2 * share)
+            self.tell(what, 0.6 + 0.2 * (shares[0] + share * (shares[1] - shares[0])))
 
         weights = tuple(self.weight(one) for one in chosen)
         search = Search(weights, self.asked.request.cancelled, told, boxes, below)

@@ -50,7 +50,7 @@ def reach(state: State, variable: Variable) -> Reach | None:
         return None
     unit = np.outer(pencil.scale, pencil.scale)
     K, M = pencil.K.toarray() / unit, pencil.M.toarray() / unit
-    rows = columns_of(state, Case.NOMINAL, variable).toarray() / pencil.scale
+    rows = columns_of(state, Case.NOMINAL, variable).T / pencil.scale
     own = rows.T @ rows
     with one_blas_thread():
         held = _null_space(rows)

@@ -5,17 +5,17 @@ t = factor - 1 for a stiffness, -sigma (factor - 1) for a mass. The small matrix
 then tells the count at all factors, and the factors at which a mode crosses the edge.
 """
 
+import math
 from collections.abc import Callable, Sequence
 from dataclasses import dataclass
 from functools import cached_property, partial
 
 import numpy as np
 import numpy.typing as npt
-import scipy.sparse as sp
 
 from modalview.advice.changes.states import State
-from modalview.advice.changes.values import Variable, terms_of
-from modalview.assembly.parameters import Case, values_at
+from modalview.advice.changes.values import Variable
+from modalview.assembly.parameters import Case
 from modalview.eigen.threads import one_blas_thread
 from modalview.errors import NumericalError
 from modalview.resonance.results import Band
@@ -88,11 +88,11 @@ class Edge:
         sigma, below, solve = self._factored
         columns, weight, of = [], [], []
         for number, one in enumerate(variables):
-            rows = columns_of(self.state, self.case, one)
-            columns.append(rows)
-            weight += [1.0 if one.family == "stiffness" else -sigma] * rows.shape[0]
-            of += [number] * rows.shape[0]
-        right = np.asarray(sp.vstack(columns).toarray()).T if columns else np.zeros((0, 0))
+            own = columns_of(self.state, self.case, one)
+            columns.append(own)
+            weight += [1.0 if one.family == "stiffness" else -sigma] * own.shape[1]
+            of += [number] * own.shape[1]
+        right = np.concatenate(columns, axis=1) if columns else np.zeros((0, 0))
         flexibility = right.T @ solve(right) if right.shape[1] else np.zeros((0, 0))
         rigid = int(self.state.assembly.structure.rigid_body.shape[1])
         return Flexible(
@@ -103,17 +103,18 @@ class Edge:
         )
 
 
-def columns_of(state: State, case: Case, variable: Variable) -> sp.csr_array:
-    """Return the roots of a variable's terms in one case (r, n): the sum of their squares is its matrix."""
-    assembly = state.assembly
-    members = [m for m in variable.members if m not in state.fixed]
-    known = {p.id for p in assembly.parameters}
-    terms = terms_of(assembly, [m for m in members if m in known])
-    held = assembly.structure.mass if variable.family == "mass" else assembly.structure.stiffness
-    values = held.values(values_at(assembly.parameters, case))[terms]
-    rows = held.rows[terms]
-    filled = np.flatnonzero((np.diff(rows.indptr) > 0) & (values > 0))
-    return sp.csr_array(sp.diags_array(np.sqrt(values[filled])) @ rows[filled])
+def columns_of(state: State, case: Case, variable: Variable) -> Array:
+    """Return the roots of a variable's terms in one case (n, r): B B^T is its matrix there."""
+    family = "mass" if variable.family == "mass" else "stiffness"
+    rows = state.rows(family)
+    values = state.term_values(case, family)
+    terms = sorted({t for m in variable.members if m not in state.fixed for t in state.terms[m]})
+    filled = [t for t in terms if rows.indptr[t] < rows.indptr[t + 1] and values[t] > 0]
+    columns = np.zeros((rows.shape[1], len(filled)))
+    for number, t in enumerate(filled):
+        entries = slice(rows.indptr[t], rows.indptr[t + 1])
+        columns[rows.indices[entries], number] = rows.data[entries] * math.sqrt(values[t])
+    return columns
 
 
 @dataclass(frozen=True, eq=False)

@@ -188,7 +188,7 @@ class _Tree:
 
     def _tell(self) -> None:
         if self.search.progress is not None:
-            self.search.progress("looking for the least change", self.boxes / self.search.most_boxes)
+            self.search.progress("looking for the least change", 0.5 * self.boxes / self.search.most_boxes)
 
     def result(self, limits: Array) -> Least:
         bound = min(self.stuck, self.heap[0][0] if self.heap else math.inf, self.best)
@@ -208,7 +208,7 @@ class _Tree:
             if self.search.cancelled():
                 raise CancelledError("Stopped by the user.")
             if self.search.progress is not None:
-                self.search.progress("proving that nothing clears", number / len(self.dropped))
+                self.search.progress("proving that nothing clears", 0.5 + 0.5 * number / len(self.dropped))
             if not self.landscape.proven_hopeless(gate, np.exp(box[:, 0]), np.exp(box[:, 1])):
                 return False
         return True

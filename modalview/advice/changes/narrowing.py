@@ -10,6 +10,7 @@ import numpy as np
 import numpy.typing as npt
 
 from modalview.advice.changes.edges import Gate, gates_of
+from modalview.advice.changes.influence import influence
 from modalview.advice.changes.landscape import Landscape, landscape
 from modalview.advice.changes.numbers import DOWN, UP, Written, rounded
 from modalview.advice.changes.options import Base, Told, Tried, option_of, tried
@@ -30,6 +31,10 @@ Bools = npt.NDArray[np.bool_]
 
 # Sets of so many tolerances are all tried; larger ones are cut down one by one.
 ALL_TRIED = 3
+# So many tolerances are considered: those that move the deciding modes most.
+MOST_CONSIDERED = 400
+# Nobody narrows more tolerances than these at once.
+MOST_NARROWED = 8
 # So many sets of one size are tried at most.
 MOST_SETS = 5_000
 # The share of a tolerance that may stay is found to 1 in so many; it is shown to two digits.
@@ -71,12 +76,16 @@ class Question:
     gates : tuple of Gate
         Of those checks.
     alone : tuple of _Alone
+        The one that moves the deciding modes most first.
+    cut : bool
+        Whether others were left out.
     cancelled : callable
     """
 
     base: Base
     gates: tuple[Gate, ...]
     alone: tuple[_Alone, ...]
+    cut: bool = False
     cancelled: Callable[[], bool] = field(default=lambda: False)
 
     @cached_property
@@ -120,11 +129,15 @@ def narrowing(base: Base, cancelled: Callable[[], bool] = lambda: False) -> Narr
     gates = _gates(base)
     if not gates:
         return None
-    question = Question(base, gates, _candidates(base), cancelled)
+    alone, cut = _candidates(base)
+    question = Question(base, gates, alone, cut, cancelled)
     names = tuple(gate.name for gate in gates)
     sets, smallest = _sets(question)
     if not sets:
         return Narrowing(names, possible=False, smallest=False, options=(), sentence=_impossible(question))
+    if len(sets[0]) > MOST_NARROWED:
+        sentence = f"It would take {len(sets[0])} tolerances narrowed at once. Change a value."
+        return Narrowing(names, possible=True, smallest=False, options=(), sentence=sentence)
     found = [_narrowed(question, chosen) for chosen in _ranked(question, sets)[:SHOWN]]
     options = sorted((one for one in found if one is not None), key=lambda one: one.amount)
     if not options:
@@ -151,8 +164,8 @@ def _gates(base: Base) -> tuple[Gate, ...]:
     return tuple(g for g in gates_of(base.states) if (id(g.state), g.band.check) in wanted)
 
 
-def _candidates(base: Base) -> tuple[_Alone, ...]:
-    """Return the values with a tolerance that moves any mode."""
+def _candidates(base: Base) -> tuple[tuple[_Alone, ...], bool]:
+    """Return the values with a tolerance that moves any mode, and whether some were left out."""
     assembly = base.states[0].assembly
     found = []
     for p in assembly.parameters:
@@ -161,41 +174,47 @@ def _candidates(base: Base) -> tuple[_Alone, ...]:
         terms = assembly.structure.mass if p.family == "mass" else assembly.structure.stiffness
         if any(terms.rows.indptr[t] < terms.rows.indptr[t + 1] for t in terms_of(assembly, (p.id,))):
             found.append(_Alone(p, Variable(p.id, p.label, p.family, (p.id,))))
-    return tuple(found)
+    weight = influence(base.states, base.checks)
+    ranked = sorted(found, key=lambda one: -weight.get(one.parameter.id, 0.0))
+    return tuple(ranked[:MOST_CONSIDERED]), len(ranked) > MOST_CONSIDERED
 
 
 def _sets(question: Question) -> tuple[list[tuple[int, ...]], bool]:
     """Return sets of tolerances, by number, that do when all can be known of them; whether none smaller."""
     every = range(len(question.alone))
+    if not every or not question.clear(every, np.zeros((1, len(every))))[0]:
+        return [], False
     for size in range(1, ALL_TRIED + 1):
         if math.comb(len(every), size) > MOST_SETS:
             break
         none = np.zeros((1, size))
         found = [chosen for chosen in combinations(every, size) if question.clear(chosen, none)[0]]
         if found:
-            return found, True
-    return _given_back(question), False
+            return found, not question.cut
+    return [_given_back(question)], False
 
 
 def _ranked(question: Question, sets: Sequence[tuple[int, ...]]) -> list[tuple[int, ...]]:
     """Return the sets of which more may be left first."""
-    half = np.array([[0.75], [0.5], [0.25], [0.1]])
+    part = np.array([[0.75], [0.5], [0.25], [0.1]])
     return sorted(
-        sets, key=lambda chosen: -int(question.clear(chosen, half.repeat(len(chosen), axis=1)).sum())
+        sets, key=lambda chosen: -int(question.clear(chosen, part.repeat(len(chosen), axis=1)).sum())
     )
 
 
-def _given_back(question: Question) -> list[tuple[int, ...]]:
-    """Return one set that does, from which no tolerance can be given back; none where not even all do."""
-    every = range(len(question.alone))
-    share = np.zeros((1, len(every)))
-    if not every or not question.clear(every, share)[0]:
-        return []
-    for number in every:
-        share[0, number] = 1.0
-        if not question.clear(every, share)[0]:
-            share[0, number] = 0.0
-    return [tuple(np.flatnonzero(share[0] == 0).tolist())]
+def _given_back(question: Question) -> tuple[int, ...]:
+    """Return one set that does, from which no tolerance can be given back: the least influential go first."""
+    low, high = 1, len(question.alone)
+    while low < high:
+        middle = (low + high) // 2
+        does = question.clear(range(middle), np.zeros((1, middle)))[0]
+        low, high = (low, middle) if does else (middle + 1, high)
+    kept = list(range(high))
+    for number in reversed(range(high)):
+        trial = [one for one in kept if one != number]
+        if trial and question.clear(trial, np.zeros((1, len(trial))))[0]:
+            kept = trial
+    return tuple(kept)
 
 
 def _narrowed(question: Question, chosen: tuple[int, ...]) -> Option | None:

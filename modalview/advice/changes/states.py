@@ -2,9 +2,11 @@
 
 from collections.abc import Iterable, Mapping, Sequence
 from dataclasses import dataclass, replace
+from functools import cached_property
 
 import numpy as np
 import numpy.typing as npt
+import scipy.sparse as sp
 
 from modalview.assembly.assemble import Assembly, assemble
 from modalview.assembly.parameters import Case, values_at
@@ -21,7 +23,7 @@ from modalview.resonance.verdict import Exactness, judge
 Array = npt.NDArray[np.float64]
 
 
-@dataclass(frozen=True, slots=True, eq=False)
+@dataclass(frozen=True, eq=False)
 class State:
     """A model in one load case.
 
@@ -46,6 +48,36 @@ class State:
         exactness = Exactness(len(assembly.exact_values), len(assembly.matter))
         cases = Cases(*(assembly.pencil(case).shifted for case in Case))
         return tuple(judge(band, cases, exactness) for band in self.bands)
+
+    @cached_property
+    def terms(self) -> dict[str, list[int]]:
+        """The terms that hold each parameter: of mass for a mass, else of stiffness."""
+        structure, parameters = self.assembly.structure, self.assembly.parameters
+        found: dict[str, list[int]] = {p.id: [] for p in parameters}
+        for terms, masses in ((structure.stiffness, False), (structure.mass, True)):
+            for t, product in enumerate(terms.product_of.tolist()):
+                for i in product:
+                    if i < len(parameters) and (parameters[i].family == "mass") is masses:
+                        found[parameters[i].id].append(t)
+        return found
+
+    def rows(self, family: str) -> sp.csr_array:
+        """Return the rows of all terms of "stiffness" or "mass" (t, n)."""
+        structure = self.assembly.structure
+        return structure.mass.rows if family == "mass" else structure.stiffness.rows
+
+    def term_values(self, case: Case, family: str) -> Array:
+        """Return the value of all terms of "stiffness" or "mass" (t,) in a case."""
+        kept: dict[tuple[Case, str], Array] = self._kept
+        if (case, family) not in kept:
+            structure = self.assembly.structure
+            terms = structure.mass if family == "mass" else structure.stiffness
+            kept[case, family] = terms.values(values_at(self.assembly.parameters, case))
+        return kept[case, family]
+
+    @cached_property
+    def _kept(self) -> dict[tuple[Case, str], Array]:
+        return {}
 
     def pencil_with(self, case: Case, factors: Mapping[str, float]) -> Pencil:
         """Return the pencil of a case with some parameters times their factors."""

@@ -92,11 +92,8 @@ def variable_named(assembly: Assembly, name: str) -> Variable:
     ------
     InputError
     """
-    alike = next((one for one in every_variable(assembly) if one.id == name), None)
-    if alike is not None:
-        return alike
-    members = [p for part in name.split("+") for p in _members(assembly, part.strip())]
-    members = list({p.id: p for p in members}.values())
+    found = [p for part in name.split("+") for p in _members(assembly, part.strip())]
+    members = list({p.id: p for p in found}.values())
     families = {p.family for p in members}
     if len(families) > 1:
         raise InputError(f'"{name}": a stiffness and a mass cannot change by one factor.')
@@ -117,14 +114,15 @@ def require_apart(assembly: Assembly, variables: Sequence[Variable]) -> None:
 
 def _require_apart(assembly: Assembly, groups: Sequence[tuple[Parameter, ...]]) -> None:
     taken: dict[tuple[str, int], Parameter] = {}
-    for group in groups:
-        for p in group:
-            for term in terms_of(assembly, (p.id,)):
-                other = taken.setdefault((p.family, term), p)
-                if other.id != p.id:
-                    raise InputError(f"{other.id} and {p.id} act on one spring: choose one of them.")
-            if sum(p.id == other.id for each in groups for other in each) > 1:
-                raise InputError(f"{p.id} is named twice: choose it once.")
+    named: set[str] = set()
+    for p in (p for group in groups for p in group):
+        if p.id in named:
+            raise InputError(f"{p.id} is named twice: choose it once.")
+        named.add(p.id)
+        for term in terms_of(assembly, (p.id,)):
+            other = taken.setdefault((p.family, term), p)
+            if other.id != p.id:
+                raise InputError(f"{other.id} and {p.id} act on one spring: choose one of them.")
 
 
 def terms_of(assembly: Assembly, members: Iterable[str]) -> list[int]:
@@ -139,7 +137,8 @@ def terms_of(assembly: Assembly, members: Iterable[str]) -> list[int]:
 
 def _members(assembly: Assembly, name: str) -> list[Parameter]:
     usable = [p for p in assembly.parameters if p.family != "damping"]
-    found = [p for p in usable if p.id == name] or [p for p in usable if p.id.startswith(f"{name}.")]
+    found = [p for p in usable if p.id == name]
+    found = found or [p for p in usable if p.id.startswith(f"{name}.") and _by_choice(p)]
     if found:
         return found
     names = [p.id for p in usable if p.part == name.partition(".")[0]] or [p.id for p in usable]
