@@ -34,6 +34,9 @@ class QuadraticForm:
     rows^T diag(v) rows anew. The diagonal is always stored.
     """
 
+    indices: npt.NDArray[np.int32]
+    indptr: npt.NDArray[np.int32]
+
     def __init__(self, rows: sp.csr_array, like: Optional["QuadraticForm"] = None) -> None:
         rows = sp.csr_array(rows)
         t, n = rows.shape

@@ -1,12 +1,15 @@
 """How many modes lie in a band: now, at some values within tolerance, at all of them."""
 
+from collections.abc import Callable
+from concurrent.futures import Executor
 from dataclasses import dataclass, field
 from fractions import Fraction
+from functools import partial
 from typing import Protocol
 
 import numpy as np
 
-from modalview.factor.counts import Count, count_at_most, count_below
+from modalview.factor.counts import LARGEST_SHARE, Count, count_at_most, count_below
 from modalview.factor.shifted import ShiftedPencil
 from modalview.units.show import short
 
@@ -52,26 +55,74 @@ class Cases:
 
 @dataclass(frozen=True, slots=True, eq=False)
 class Counters:
-    """What counts the three cases; the same object thrice where nothing has a tolerance."""
+    """What counts the three cases; the same object thrice where nothing has a tolerance.
+
+    Both counts of a pair are made at once where ``beside`` is given.
+    """
 
     nominal: Counter
     soft_heavy: Counter
     stiff_light: Counter
+    beside: Executor | None = field(default=None, kw_only=True)
 
 
 @dataclass(frozen=True, slots=True, eq=False)
 class Floating:
-    """Counts by floating-point factors with a proven uncertainty; edges in rad/s."""
+    """Counts by floating-point factors with a proven uncertainty; edges in rad/s.
+
+    Parameters
+    ----------
+    shifted : ShiftedPencil
+    share : float
+        An edge may move outward by this share of its square, its uncertainty included.
+    """
 
     shifted: ShiftedPencil
+    share: float = LARGEST_SHARE
+    _made: dict[tuple[Edge, str], Count] = field(default_factory=dict)
 
     def at_most(self, edge: Edge) -> Count:
         """Count upward of the square, which is rounded."""
-        return count_at_most(self.shifted, float(np.nextafter(float(edge) ** 2, np.inf)))
+        return self._once(edge, "at most", lambda: count_at_most(self.shifted, _above(edge), self.share))
 
     def below(self, edge: Edge) -> Count:
         """Count downward of the square; that of zero stays zero: nothing below it lies in any band."""
-        return count_below(self.shifted, max(0.0, float(np.nextafter(float(edge) ** 2, -np.inf))))
+        return self._once(edge, "below", lambda: count_below(self.shifted, _under(edge), self.share))
+
+    def _once(self, edge: Edge, side: str, count: Callable[[], Count]) -> Count:
+        found = self._made.get((edge, side))
+        if found is None:
+            found = self._made[edge, side] = count()
+        return found
+
+
+def _above(edge: Edge) -> float:
+    return float(np.nextafter(float(edge) ** 2, np.inf))
+
+
+def _under(edge: Edge) -> float:
+    return max(0.0, float(np.nextafter(float(edge) ** 2, -np.inf)))
+
+
+@dataclass(frozen=True, slots=True, eq=False)
+class Sharpened:
+    """Counts as ``Floating`` does, and takes what a rougher one has counted where that is sharp enough."""
+
+    rough: Floating
+    share: float = LARGEST_SHARE
+
+    def at_most(self, edge: Edge) -> Count:
+        """Count upward of the square."""
+        found, lam = self.rough.at_most(edge), _above(edge)
+        return found if self._sharp(found, lam) else count_at_most(self.rough.shifted, lam, self.share)
+
+    def below(self, edge: Edge) -> Count:
+        """Count downward of the square."""
+        found, lam = self.rough.below(edge), _under(edge)
+        return found if self._sharp(found, lam) else count_below(self.rough.shifted, lam, self.share)
+
+    def _sharp(self, found: Count, lam: float) -> bool:
+        return found.number is not None and abs(found.edge - lam) + found.uncertainty <= self.share * lam
 
 
 @dataclass(frozen=True, slots=True)
@@ -180,37 +231,58 @@ def count_band_by(
     """
     lo, hi = nominal_band
     low, high = tolerance_band
-    tally, nominal = _Tally(), ("nominal", counters.nominal)
+    tally, nominal = _Tally(counters.beside), ("nominal", counters.nominal)
     exact = counters.soft_heavy is counters.nominal and counters.stiff_light is counters.nominal
     if exact and (low, high) == (lo, hi):
-        inside = _difference(tally.at_most(*nominal, hi), tally.below(*nominal, lo))
+        inside = tally.between((*nominal, hi), (*nominal, lo))
         return BandCount(inside, inside, inside, tuple(tally.evidence))
     names = ("nominal", "nominal") if exact else ("soft-heavy", "stiff-light")
     soft, stiff = (names[0], counters.soft_heavy), (names[1], counters.stiff_light)
-    possible = _difference(tally.at_most(*soft, high), tally.below(*stiff, low))
+    possible = tally.between((*soft, high), (*stiff, low))
     if possible == 0 and low <= lo <= hi <= high:
         return BandCount(0, 0, 0, tuple(tally.evidence))
-    inside = _difference(tally.at_most(*nominal, hi), tally.below(*nominal, lo))
+    inside = tally.between((*nominal, hi), (*nominal, lo))
     if inside == 0:
         return BandCount(0, possible, 0, tuple(tally.evidence))
-    certain = inside if exact else _difference(tally.below(*stiff, hi), tally.at_most(*soft, lo))
+    certain = inside if exact else tally.surely_between((*stiff, hi), (*soft, lo))
     return BandCount(inside, possible, certain, tuple(tally.evidence))
+
+
+# Case, what counts it, edge.
+_Asked = tuple[str, Counter, Edge]
 
 
 @dataclass(slots=True)
 class _Tally:
-    """Counts made so far."""
+    """Counts made so far, in pairs that may be made at once."""
 
+    beside: Executor | None
     evidence: list[EdgeCount] = field(default_factory=list)
 
-    def at_most(self, case: str, counter: Counter, edge: Edge) -> int | None:
-        self.evidence.append(EdgeCount(case, "at most", edge, counter.at_most(edge)))
-        return self.evidence[-1].count.number
+    def between(self, upper: _Asked, lower: _Asked) -> int | None:
+        """Return how many are at most the upper edge and not below the lower one; None is undecided."""
+        return self._difference(partial(_at_most, upper), partial(_below, lower))
 
-    def below(self, case: str, counter: Counter, edge: Edge) -> int | None:
-        self.evidence.append(EdgeCount(case, "below", edge, counter.below(edge)))
-        return self.evidence[-1].count.number
+    def surely_between(self, upper: _Asked, lower: _Asked) -> int | None:
+        """Return how many are below the upper edge and not at most the lower one; None is undecided."""
+        return self._difference(partial(_below, upper), partial(_at_most, lower))
+
+    def _difference(self, upper: Callable[[], EdgeCount], lower: Callable[[], EdgeCount]) -> int | None:
+        if self.beside is None:
+            found = (upper(), lower())
+        else:
+            waiting = self.beside.submit(lower)
+            found = (upper(), waiting.result())
+        self.evidence += found
+        high, low = (one.count.number for one in found)
+        return None if high is None or low is None else max(0, high - low)
 
 
-def _difference(upper: int | None, lower: int | None) -> int | None:
-    return None if upper is None or lower is None else max(0, upper - lower)
+def _at_most(asked: _Asked) -> EdgeCount:
+    case, counter, edge = asked
+    return EdgeCount(case, "at most", edge, counter.at_most(edge))
+
+
+def _below(asked: _Asked) -> EdgeCount:
+    case, counter, edge = asked
+    return EdgeCount(case, "below", edge, counter.below(edge))

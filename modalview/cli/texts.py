@@ -44,8 +44,9 @@ def bounds_text(outlook: Outlook | MatrixOutlook) -> str:
         parts.append(table([head, *rows], right=frozenset({2, 3, 4})))
     parts += [_separated(bounds.separated)] if bounds.separated else []
     parts += [wrapped(outlook.sentence), wrapped_lines(bounds.notes)]
-    if isinstance(outlook, Outlook) and outlook.doubts:
-        parts.append(doubts_text(outlook.doubts))
+    doubts = outlook.doubts if isinstance(outlook, Outlook) else ()
+    if doubts:
+        parts.append(doubts_text(doubts))
     return "\n\n".join(parts + tail(outlook))
 
 

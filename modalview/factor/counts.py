@@ -79,7 +79,7 @@ class ZeroModes:
     below: int | None
 
 
-def count_at_most(shifted: ShiftedPencil, lam: float) -> Count:
+def count_at_most(shifted: ShiftedPencil, lam: float, share: float = LARGEST_SHARE) -> Count:
     """Count the eigenvalues <= lam: never fewer than there are.
 
     Parameters
@@ -87,23 +87,25 @@ def count_at_most(shifted: ShiftedPencil, lam: float) -> Count:
     shifted : ShiftedPencil
     lam : float
         rad**2/s**2.
+    share : float
+        The edge may move outward by this share of itself, its uncertainty included.
 
     Returns
     -------
     Count
         Counted at an edge sigma > lam with sigma - delta > lam, so that everything up to lam is inside and
-        what is counted too much lies within ``edge + uncertainty``. Undecided beyond 1e-6 of lam.
+        what is counted too much lies within ``edge + uncertainty``. Undecided beyond that.
     """
     if shifted.definite and lam <= 0:
         number = shifted.rigid_modes if lam == 0 else 0
         return Count(number, lam, 0.0, "a sum of positive stiffness terms has none below zero")
-    found = _outward(shifted, lam, 1.0)
+    found = _outward(shifted, lam, 1.0, share)
     if isinstance(found, str):
         return Count(None, lam, np.inf, found)
     return Count(max(found.negative, shifted.rigid_modes), found.sigma, found.uncertainty, found.method)
 
 
-def count_below(shifted: ShiftedPencil, lam: float) -> Count:
+def count_below(shifted: ShiftedPencil, lam: float, share: float = LARGEST_SHARE) -> Count:
     """Count the eigenvalues < lam: never more than there are, never fewer than the rigid-body modes.
 
     Parameters
@@ -111,17 +113,19 @@ def count_below(shifted: ShiftedPencil, lam: float) -> Count:
     shifted : ShiftedPencil
     lam : float
         rad**2/s**2.
+    share : float
+        The edge may move outward by this share of itself, its uncertainty included.
 
     Returns
     -------
     Count
-        Counted at an edge sigma < lam with sigma + delta < lam. Undecided beyond 1e-6 of lam. At lam <= 0
+        Counted at an edge sigma < lam with sigma + delta < lam. Undecided beyond that. At lam <= 0
         the rigid-body modes, which lie in no band, are still counted.
     """
     rigid = shifted.rigid_modes
     if shifted.definite and lam <= 0:
         return Count(rigid, lam, 0.0, "a sum of positive stiffness terms has none below zero")
-    found = _outward(shifted, lam, -1.0)
+    found = _outward(shifted, lam, -1.0, share)
     if isinstance(found, str):
         return Count(None, lam, np.inf, found)
     return Count(max(found.negative, rigid), found.sigma, found.uncertainty, found.method)
@@ -152,13 +156,13 @@ def count_zero(shifted: ShiftedPencil) -> ZeroModes:
     return ZeroModes(above.negative - below.negative, reach, below.negative)
 
 
-def _outward(shifted: ShiftedPencil, lam: float, side: float) -> Inertia | str:
+def _outward(shifted: ShiftedPencil, lam: float, side: float, share: float = LARGEST_SHARE) -> Inertia | str:
     """Factor at an edge beyond lam on one side that proves its count, or say why none does.
 
     First in the coordinates as they are, then, where there are terms, in those relative over stiff ones,
     then by dense pivots.
     """
-    allowed = LARGEST_SHARE * abs(lam) if lam else LARGEST_SHARE_OF_TOP * shifted.extents.top
+    allowed = share * abs(lam) if lam else LARGEST_SHARE_OF_TOP * shifted.extents.top
     least = shifted.least_uncertainty(lam)
     sought = _Sought(lam, side, allowed)
     nudges = NUDGES if shifted.relative is None else 0

@@ -2,14 +2,15 @@
 
 import math
 from collections.abc import Sequence
+from concurrent.futures import Executor, ThreadPoolExecutor
+from contextlib import ExitStack
+from dataclasses import replace
 from time import perf_counter
 
-from modalview.advice.assembled import doubts_of
-from modalview.advice.drawn import doubts
 from modalview.assembly.assemble import Assembly, assemble
 from modalview.assembly.dampedterms import has_dashpots
 from modalview.assembly.parameters import Case
-from modalview.bounds.bands import Cases, Counters
+from modalview.bounds.bands import Cases, Counters, Floating, Sharpened
 from modalview.bounds.before import before_solve
 from modalview.eigen.near_count import GapCounter
 from modalview.eigen.solve import LARGEST
@@ -28,6 +29,11 @@ RAD_PER_HZ = 2 * math.pi
 # Edges of bands of a large model may first move outward by this share: that can only make a verdict stricter;
 # where fewer modes than this are inside, the edges are then counted sharply.
 ROUGHLY, MANY = 1e-3, 100
+# From so many modes on an edge may first move by this share: rounding seldom reaches so far, while beyond
+# 1e-6 of the edge counts in relative coordinates would be due, which cost ten times as much.
+SEVERAL, NEARLY = 1000, 3e-5
+# From so many modes on two counts are made at once: the factorizations let go of the interpreter.
+AT_ONCE = 500
 
 
 def look(request: Request, previous: Outlook | None = None) -> Outlook:
@@ -67,7 +73,6 @@ def look(request: Request, previous: Outlook | None = None) -> Outlook:
         coordinates=assembly.pencil().n,
         toleranced=bool(assembly.toleranced),
         dashpots=has_dashpots(assembly),
-        doubts=(*doubts(model), *doubts_of(assembly, bounds)),
         seconds=perf_counter() - start,
     )
 
@@ -89,27 +94,39 @@ def judge_bands(request: Request, assembly: Assembly, wanted: Sequence[Band]) ->
     """
     exactness = Exactness(len(assembly.exact_values), len(assembly.matter))
     modes = assembly.pencil().modes
-    rough, sharp = _counters(request, assembly)
-    found = []
-    for band in wanted:
-        _stop_if(request)
-        check = answer(Question(band, band.nominal, band.tolerance, rough, modes, BY_COUNTS), exactness)
-        if rough is not sharp and check.verdict is not Verdict.CLEAR and (check.inside or 0) < MANY:
-            check = answer(Question(band, band.nominal, band.tolerance, sharp, modes, BY_COUNTS), exactness)
-        found.append(check)
-    return tuple(found)
+    with ExitStack() as stack:
+        beside = stack.enter_context(ThreadPoolExecutor(1)) if AT_ONCE <= modes <= LARGEST else None
+        rough, sharp = _counters(request, assembly, beside)
+        found = []
+        for band in wanted:
+            _stop_if(request)
+            check = answer(Question(band, band.nominal, band.tolerance, rough, modes, BY_COUNTS), exactness)
+            if rough is not sharp and check.verdict is not Verdict.CLEAR and (check.inside or 0) < MANY:
+                check = answer(
+                    Question(band, band.nominal, band.tolerance, sharp, modes, BY_COUNTS), exactness
+                )
+            found.append(check)
+        return tuple(found)
 
 
-def _counters(request: Request, assembly: Assembly) -> tuple[Counters, Counters]:
+def _counters(request: Request, assembly: Assembly, beside: Executor | None) -> tuple[Counters, Counters]:
     """Return what counts the three cases: roughly, and sharply for bands where that may matter.
 
     Of small models one and the same. Edges of large ones may first move outward farther, which can only add
     modes to a band; where pivots do not decide, counts are made in the gaps between modes.
     """
     pencils = [assembly.pencil(case) for case in Case]
-    if pencils[0].modes <= LARGEST:
-        only = Cases(*(pencil.shifted for pencil in pencils)).counters()
+    if pencils[0].modes < SEVERAL:
+        cases = Cases(*(pencil.shifted for pencil in pencils)).counters()
+        only = replace(cases, beside=beside)
         return only, only
+    if pencils[0].modes <= LARGEST:
+        nearly = {id(pencil): Floating(pencil.shifted, NEARLY) for pencil in pencils}
+        sharpened = {key: Sharpened(one) for key, one in nearly.items()}
+        return (
+            Counters(*(nearly[id(pencil)] for pencil in pencils), beside=beside),
+            Counters(*(sharpened[id(pencil)] for pencil in pencils), beside=beside),
+        )
     rough, sharp = (
         {id(pencil): GapCounter(pencil, request.cancelled, share) for pencil in pencils}
         for share in (ROUGHLY, LARGEST_SHARE)

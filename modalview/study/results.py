@@ -1,12 +1,14 @@
 """What window and command line are given."""
 
 from collections.abc import Callable
-from dataclasses import dataclass, field, fields
+from dataclasses import dataclass, fields
 
 import numpy as np
 import numpy.typing as npt
 
+from modalview.advice.assembled import doubts_of
 from modalview.advice.doubt import Doubt
+from modalview.advice.drawn import doubts
 from modalview.assembly.assemble import Assembly
 from modalview.bounds.before import Bounds
 from modalview.eigen.modes import Modes
@@ -92,8 +94,6 @@ class Known:
         Whether the model has any.
     seconds : float
         Time it took.
-    doubts : tuple of Doubt
-        What an engineer would doubt about the model; they block nothing.
     """
 
     request: Request
@@ -108,7 +108,6 @@ class Known:
     toleranced: bool
     dashpots: bool
     seconds: float
-    doubts: tuple[Doubt, ...] = field(default=(), kw_only=True)
 
 
 @dataclass(frozen=True, slots=True)
@@ -121,6 +120,11 @@ class Outlook(Known):
     """
 
     assembly: Assembly
+
+    @property
+    def doubts(self) -> tuple[Doubt, ...]:
+        """What an engineer would doubt about the model; they block nothing, so no verdict waits for them."""
+        return (*doubts(self.request.model), *doubts_of(self.assembly, self.bounds))
 
     def known(self) -> Known:
         """Return it without the assembly."""

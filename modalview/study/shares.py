@@ -6,11 +6,12 @@ import numpy as np
 import numpy.typing as npt
 import scipy.sparse as sp
 
-from modalview.assembly.assemble import Assembly, TermSet
+from modalview.assembly.assemble import Assembly
 from modalview.assembly.kinematics import ROTATIONS
 from modalview.assembly.locks import speed_ratios
 from modalview.assembly.masses import ROTATION_ENTRIES
 from modalview.assembly.parameters import Case, shown_name, values_at
+from modalview.assembly.termsets import TermSet
 from modalview.eigen.modes import Modes
 from modalview.eigen.shares import strain_shares
 from modalview.model.parts import FREEDOMS, Body, InertiaTensor, Link, Motion

@@ -14,6 +14,7 @@ class Analysis(QObject):
     """Keeps the latest outlook and modes; a result of an older model is kept and told as out of date."""
 
     outlook_changed = Signal()
+    doubts_changed = Signal()
     solution_changed = Signal()
     damped_changed = Signal()
     busy_changed = Signal()
@@ -25,6 +26,7 @@ class Analysis(QObject):
         self._model: Model | None = None
         self.automatic = True
         self.outlook: Any = None  # study.Outlook
+        self.doubts: tuple[Any, ...] = ()  # advice.Doubt; those of the model before, until they are told anew
         self.solution: Any = None  # study.Solution
         self.damped: Any = None  # study.damped.DampedSolution, where there are dashpots
         self.plane: Any = None  # drawing.complexplanecontent of this model or of the one before
@@ -60,7 +62,7 @@ class Analysis(QObject):
         self._patience.stop()
         self._model = self.outlook = self.solution = self.refusal = None
         self.damped = self.plane = None
-        self.foretold = {}
+        self.foretold, self.doubts = {}, ()
         self._set_finding(False)
         self.outlook_changed.emit()
         self.solution_changed.emit()
@@ -103,6 +105,7 @@ class Analysis(QObject):
     def _on_answered(self, answer: Answer) -> None:
         take = {
             Step.LOOKED: self._take_outlook,
+            Step.DOUBTED: self._take_doubts,
             Step.FORETOLD: self._foretell,
             Step.FINDING: lambda _: self._set_finding(True),
             Step.PROGRESSED: self._take_progress,
@@ -118,6 +121,10 @@ class Analysis(QObject):
         self.outlook, self.refusal, self.looking = outlook, None, False
         if not self._patience.isActive():
             self.outlook_changed.emit()
+
+    def _take_doubts(self, doubts: tuple[Any, ...]) -> None:
+        self.doubts = doubts
+        self.doubts_changed.emit()
 
     def _take_progress(self, progress: tuple[str, float]) -> None:
         self.progress = progress

@@ -81,7 +81,7 @@ class Doubts(QWidget):
     def show_known(self, model: Model | None, analysis: Analysis) -> None:
         """Show the doubts about the model on the sheet: also about one that cannot be analysed."""
         if analysis.outlook is not None:
-            self.show_doubts(analysis.outlook.doubts)
+            self.show_doubts(analysis.doubts)
         elif analysis.refusal is not None and model is not None:
             self.show_doubts(_of_refused(model))
         elif not analysis.looking:

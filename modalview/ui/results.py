@@ -213,9 +213,14 @@ class Results(QScrollArea):
         for number, card in enumerate(self._cards):
             card.setVisible(number < len(checks))
         outlook = self._analysis.outlook
-        self.doubts.show_known(self._document.model, self._analysis)
+        self.show_doubts()
         _say(self.not_checked, outlook.not_checked if outlook else ())
         _say(self.notes, outlook.notes if outlook else ())
+        self._lead_tab_key()
+
+    def show_doubts(self) -> None:
+        """Show the doubts, which come after the verdict."""
+        self.doubts.show_known(self._document.model, self._analysis)
         self._lead_tab_key()
 
     def _lead_tab_key(self) -> None:

@@ -30,6 +30,7 @@ class Step(Enum):
     """What an answer tells; in brackets its content."""
 
     LOOKED = "known before any solve (Known)"
+    DOUBTED = "what an engineer would doubt about the model (tuple of Doubt)"
     FORETOLD = "the lowest frequencies after an edit (number to hertz, empty where not foretold)"
     FINDING = "the solve begins (nothing)"
     PROGRESSED = "the solve goes on (what is done, share done)"
@@ -69,6 +70,8 @@ class Studies:
         )
         outlook = self._outlook = study.look(request, self._outlook)
         tell(Step.LOOKED, outlook)
+        if not stopped():
+            tell(Step.DOUBTED, outlook.doubts)
         found = damped = None
         if find is Find.ALWAYS or (find is Find.IF_SMALL and outlook.coordinates <= SMALL_MODEL):
             tell(Step.FINDING, None)

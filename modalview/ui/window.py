@@ -79,6 +79,7 @@ class Window(Frame):
         self.filing.saving.busy_changed.connect(self.show_reading)
         self._patience.timeout.connect(lambda: self._tell_reading(self._patience.property("what")))
         self.analysis.outlook_changed.connect(self.show_known)
+        self.analysis.doubts_changed.connect(self.results.show_doubts)
         self.analysis.solution_changed.connect(self.show_modes)
         self.analysis.damped_changed.connect(self.show_damped)
         self.analysis.busy_changed.connect(self.show_busy)

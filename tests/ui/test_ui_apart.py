@@ -67,7 +67,7 @@ def test_the_other_process_tells_what_is_known_then_the_modes_and_when_it_is_don
     model = read_model(PUMP)
     answers = answers_of_the_other_process(*ordered(None, model))
     kinds = [kind for kind, _ in answers if kind is not Step.PROGRESSED]
-    assert kinds == [Step.LOOKED, Step.FINDING, Step.SOLVED, Step.DAMPED, served.DONE]
+    assert kinds == [Step.LOOKED, Step.DOUBTED, Step.FINDING, Step.SOLVED, Step.DAMPED, served.DONE]
     (known,) = contents(answers, Step.LOOKED)
     assert not hasattr(known, "assembly")
     assert known.coordinates == 3

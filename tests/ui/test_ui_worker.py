@@ -33,7 +33,9 @@ class Bench:
         del previous
         if self.error is not None:
             raise self.error
-        return SimpleNamespace(request=request, coordinates=self.coordinates, dashpots=self.dashpots)
+        return SimpleNamespace(
+            request=request, coordinates=self.coordinates, dashpots=self.dashpots, doubts=()
+        )
 
     def solve(self, request, outlook):
         self.solving.set()
@@ -84,7 +86,14 @@ def test_an_order_is_looked_at_and_a_small_model_solved(worker, bench, answers, 
     bench.go.set()
     worker.order(FIRST, Find.IF_SMALL)
     qtbot.waitUntil(lambda: Step.DAMPED in steps(answers))
-    assert steps(answers) == [Step.LOOKED, Step.FINDING, Step.PROGRESSED, Step.SOLVED, Step.DAMPED]
+    assert steps(answers) == [
+        Step.LOOKED,
+        Step.DOUBTED,
+        Step.FINDING,
+        Step.PROGRESSED,
+        Step.SOLVED,
+        Step.DAMPED,
+    ]
 
 
 def test_a_model_that_is_not_small_is_solved_only_when_asked(worker, bench, answers, qtbot):
