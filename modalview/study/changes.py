@@ -34,7 +34,12 @@ WORTH = 0.95
 PAIRS_SHOWN = 3
 # Ceilings of a model of more modes than this are left out of the overview; ask for one value.
 MOST_CEILINGS = 60
+# The windows of so many values are proven at once; what is proposed always is.
+MOST_PROVEN = 150
 NO_CHECKS = "Nothing to clear: give a machine its speed, its orders and the margin wanted."
+UNPROVEN = (
+    "Of so many values the windows are told without proof; asked for one value they are proven by counts."
+)
 NOT_LOOKED_AT = (
     "Changed heights and places of mounts, added absorbers and barred speeds are no values: "
     "not looked at here."
@@ -168,7 +173,7 @@ def changes(asked: ChangesRequest) -> Changes:
         narrowing=narrow,
         placements=placed,
         sentence=_sentence(base, options, windows, least),
-        notes=_notes(base),
+        notes=(*_notes(base), *((UNPROVEN,) if len(variables) > MOST_PROVEN else ())),
         seconds=perf_counter() - start,
     )
 
@@ -209,7 +214,8 @@ class _Work:
         windows, options = [], []
         for number, variable in enumerate(variables):
             self.tell(f"windows of {variable.label}", 0.6 * number / len(variables))
-            found = value_windows(self.base, self.gates, variable, ranges)
+            few = len(variables) <= MOST_PROVEN
+            found = value_windows(self.base, self.gates, variable, ranges, prove=few)
             windows.append(found)
             if self.gates and not self.base.clear:
                 options += [

@@ -24,7 +24,8 @@ class Window:
         What ends the window below and above: "machine/1x, soft-heavy" (with the load case, where there is
         one), "your limit", or "" where it is open.
     proven : bool
-        By counts at both ends; nothing is proposed from a window that is not.
+        By counts at both ends. Not tried where very many values are looked at together; what is proposed from
+        a window is always proven itself.
     """
 
     low: float

@@ -10,7 +10,7 @@ from modalview.advice.changes.numbers import DOWN, UP
 from modalview.advice.changes.options import Base, Told, option_of, tried
 from modalview.advice.changes.results import Kind, Option, ValueWindows
 from modalview.advice.changes.values import Variable
-from modalview.advice.changes.windows import windows
+from modalview.advice.changes.windows import Shown, windows
 from modalview.advice.changes.writing import Writer
 
 # Digits of a value that is proposed from a window: those its end was rounded to, at most.
@@ -22,7 +22,7 @@ INWARD = (0.0, 1e-4, 1e-3)
 
 
 def value_windows(
-    base: Base, gates: Sequence[Gate], variable: Variable, ranges: Ranges | None
+    base: Base, gates: Sequence[Gate], variable: Variable, ranges: Ranges | None, *, prove: bool = True
 ) -> ValueWindows:
     """Return the windows and ceilings of one value.
 
@@ -34,16 +34,17 @@ def value_windows(
     variable : Variable
     ranges : Ranges or None
         Of the model as it is, for the modes whose ceilings are told.
+    prove : bool
+        Prove the windows by counts.
     """
     writer = Writer.of(base.states[0].assembly, base.model)
     nominal = writer.nominal(variable)
-    found = windows(
-        gates,
-        variable,
+    shown = Shown(
         nominal,
         lambda value, digits: writer.text(variable, value, digits),
         lambda value, digits, side: writer.spelled(variable, value, digits, side),
     )
+    found = windows(gates, variable, shown, prove=prove)
     known = ranges is not None
     concerned = {mode for band in base.states[0].bands for mode in (ranges.within(band) if ranges else ())}
     low, high = variable.limits
@@ -66,9 +67,8 @@ def window_options(
     """Yield the nearest value below and above today's that clears everything, each proven and solved anew."""
     if found.clear_now:
         return
-    usable = [one for one in found.windows if one.proven]
-    below = max((one.high for one in usable if one.high < found.nominal), default=None)
-    above = min((one.low for one in usable if one.low > found.nominal), default=None)
+    below = max((one.high for one in found.windows if one.high < found.nominal), default=None)
+    above = min((one.low for one in found.windows if one.low > found.nominal), default=None)
     for value, side in ((below, DOWN), (above, UP)):
         if value is None or not 1 / FARTHEST <= value / found.nominal <= FARTHEST:
             continue

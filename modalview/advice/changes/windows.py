@@ -2,7 +2,7 @@
 
 import math
 from collections.abc import Callable, Sequence
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 from itertools import pairwise
 
 import numpy as np
@@ -125,19 +125,12 @@ def _cut(span: Span, limits: tuple[float, float]) -> Span | None:
     return Span(low, high, by)
 
 
-def windows(
-    gates: Sequence[Gate],
-    variable: Variable,
-    nominal: float,
-    text_of: Callable[[float, int], str],
-    spelled: Callable[[float, int, int], float] = rounded,
-) -> tuple[Window, ...]:
-    """Return the windows of a variable, their ends rounded inward and proven by counts.
+@dataclass(frozen=True, slots=True)
+class Shown:
+    """How the ends of windows are shown.
 
     Parameters
     ----------
-    gates : sequence of Gate
-    variable : Variable
     nominal : float
         Today's value, SI; 1 for several that change by one factor.
     text_of : callable
@@ -145,51 +138,62 @@ def windows(
     spelled : callable
         Rounds a value to so many digits and to a side, in the unit it is shown in.
     """
-    found = []
-    for span in spans(gates, variable):
-        window = _window(gates, variable, span, nominal, text_of, spelled)
-        if window is not None:
-            found.append(window)
-    return tuple(found)
+
+    nominal: float
+    text_of: Callable[[float, int], str]
+    spelled: Callable[[float, int, int], float] = rounded
+
+
+def windows(
+    gates: Sequence[Gate], variable: Variable, shown: Shown, *, prove: bool = True
+) -> tuple[Window, ...]:
+    """Return the windows of a variable, their ends rounded inward and proven by counts.
+
+    Parameters
+    ----------
+    gates : sequence of Gate
+    variable : Variable
+    shown : Shown
+    prove : bool
+        Two pencils and two counts of every check for each window.
+    """
+    found = (_window(gates, variable, span, shown, prove=prove) for span in spans(gates, variable))
+    return tuple(one for one in found if one is not None)
 
 
 def _window(
-    gates: Sequence[Gate],
-    variable: Variable,
-    span: Span,
-    nominal: float,
-    text_of: Callable[[float, int], str],
-    spelled: Callable[[float, int, int], float],
+    gates: Sequence[Gate], variable: Variable, span: Span, shown: Shown, *, prove: bool
 ) -> Window | None:
-    exact = (span.low * nominal, span.high * nominal)
+    """Return a span with few digits, more where it is narrow or where counts leave an end open."""
     last = None
     for digits in DIGITS:
-        low, high = exact
-        for _ in range(STEPS):
-            low = spelled(_inside(low, exact[0], UP), digits, UP) if low > 0 else 0.0
-            high = spelled(_inside(high, exact[1], DOWN), digits, DOWN) if high < math.inf else math.inf
-            if low > high:
-                break
-            texts = (
-                text_of(low, digits) if low > 0 else "",
-                text_of(high, digits) if high < math.inf else "",
-            )
-            proven = proves(gates, variable, low / nominal, high / nominal)
-            last = Window(low, high, *texts, exact, span.bound_by, proven)
-            if proven:
-                return last
-            low, high = _next(low, digits, UP), _next(high, digits, DOWN)
+        for inward in range(STEPS):
+            last = _rounded(span, shown, digits, inward) or last
+            if last is None or not prove:
+                continue
+            if proves(gates, variable, last.low / shown.nominal, last.high / shown.nominal):
+                return replace(last, proven=True)
+        if last is not None and not prove:
+            return last
     return last
 
 
-def _inside(value: float, exact: float, side: int) -> float:
-    """Keep a value of which unit conversion lost a last bit on the inner side of the exact end."""
-    return max(value, exact) if side == UP else min(value, exact)
-
-
-def _next(value: float, digits: int, side: int) -> float:
-    """Return a value that rounds to the next number of so many digits on a side."""
-    return value * (1 + side * 10.0 ** (1 - digits) / 2) if 0 < value < math.inf else value
+def _rounded(span: Span, shown: Shown, digits: int, inward: int) -> Window | None:
+    """Return a span with ends of so many digits, some units of the last inward; None where none is left."""
+    exact = (span.low * shown.nominal, span.high * shown.nominal)
+    unit = inward * 10.0 ** (1 - digits)
+    low, high = exact
+    if low > 0:
+        low = max(shown.spelled(low * (1 + unit), digits, UP), low)
+    if high < math.inf:
+        high = min(shown.spelled(high * (1 - unit), digits, DOWN), high)
+    if low > high:
+        return None
+    texts = (
+        shown.text_of(low, digits) if low > 0 else "",
+        shown.text_of(high, digits) if high < math.inf else "",
+    )
+    return Window(low, high, *texts, exact, span.bound_by, proven=False)
 
 
 def proves(gates: Sequence[Gate], variable: Variable, low: float, high: float) -> bool:
