@@ -1,4 +1,4 @@
-"""The pages of charts in one window: response, speeds, mounts; they follow the model while in sight."""
+"""The pages of charts in one window: changes, response, speeds, mounts; they follow the model in sight."""
 
 from typing import Any
 
@@ -6,12 +6,13 @@ from PySide6.QtCore import QObject, Signal
 
 from modalview.model.parts import Model, Motion
 from modalview.ui.campbellpage import SpeedsPage
+from modalview.ui.changespage import ChangesPage
 from modalview.ui.mountspage import MountsPage
 from modalview.ui.pages import Pages
 from modalview.ui.responsepage import ResponsePage
 from modalview.ui.theme import Theme
 
-NAMES = ("response", "speeds", "mounts")
+NAMES = ("changes", "response", "speeds", "mounts")
 
 
 class Charts(QObject):
@@ -22,16 +23,26 @@ class Charts(QObject):
     def __init__(self, below: Pages, parent: QObject) -> None:
         super().__init__(parent)
         self._below = below
-        self.response, self.speeds, self.mounts = ResponsePage(below), SpeedsPage(below), MountsPage(below)
-        self.pages = {"response": self.response, "speeds": self.speeds, "mounts": self.mounts}
-        for (name, page), title in zip(self.pages.items(), ("Response", "Speeds", "Mounts"), strict=True):
+        self.changes, self.response = ChangesPage(below), ResponsePage(below)
+        self.speeds, self.mounts = SpeedsPage(below), MountsPage(below)
+        self.pages = {
+            "changes": self.changes,
+            "response": self.response,
+            "speeds": self.speeds,
+            "mounts": self.mounts,
+        }
+        for name, page in self.pages.items():
+            title = name.capitalize()
             below.add(name, title, page)
             page.inquiry.failed.connect(self.failed)
 
     def show_model(self, model: Model, system: str, *, anew: bool) -> None:
         """Follow the model on the sheet."""
         self.set_system(system)
-        self._below.offer("mounts", there=model.motion is not Motion.SHAFT_TRAIN)
+        there = model.motion is not Motion.SHAFT_TRAIN
+        if not there and self._below.current() == "mounts":
+            self._below.show_page("modes")
+        self._below.offer("mounts", there=there)
         for page in self.pages.values():
             page.follow(model, anew=anew)
 

@@ -150,6 +150,20 @@ def test_a_large_model_waits_until_somebody_wants_it(ask):
     assert not inquiry.busy
 
 
+def test_a_large_model_that_is_wanted_is_answered_aside(ask, qtbot, monkeypatch):
+    large = Model(motion=Motion.PLANE, bodies=tuple(Body(id=f"b{n}") for n in range(150)))
+    asked = []
+    monkeypatch.setattr("modalview.ui.inquiry.answer_aside", lambda *given: asked.append(given) or "found")
+    inquiry = ask(lambda *_: "in the thread")
+    inquiry.show(in_sight=True)
+    inquiry.follow(large)
+    inquiry.want()
+    qtbot.waitUntil(lambda: inquiry.current)
+    assert inquiry.result == "found"
+    assert asked[0][1] == (large, ())
+    assert not inquiry.waits
+
+
 @pytest.mark.slow
 def test_a_process_of_its_own_answers_refuses_and_is_ended():
     model = read_model(GENERATOR)
@@ -374,6 +388,13 @@ def test_a_shaft_train_has_no_page_of_mounts(window, qtbot):
     shown = [tabs.tabText(i) for i in range(tabs.count()) if tabs.isTabVisible(i)]
     assert {"Response", "Speeds"} <= set(shown)
     assert "Mounts" not in shown
+
+
+def test_a_page_that_goes_with_another_model_leaves_the_modes_in_sight(window, qtbot):
+    show(window, qtbot, "mounts", GENERATOR)
+    window.document.open(TRAIN, example=True)
+    settle(qtbot, window)
+    assert window.below.current() == "modes"
 
 
 # What they share
