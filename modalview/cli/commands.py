@@ -4,7 +4,19 @@ import argparse
 from collections.abc import Callable
 from pathlib import Path
 
-from modalview.cli import changes, documents, imports, matrices, mounts, near, response, speeds, texts, tune
+from modalview.cli import (
+    changes,
+    documents,
+    imports,
+    matrices,
+    mounts,
+    near,
+    response,
+    speeds,
+    texts,
+    tune,
+    vary,
+)
 from modalview.cli.damped import damped_document, damped_text
 from modalview.cli.printing import (
     OK,
@@ -162,6 +174,7 @@ COMMANDS: dict[str, tuple[str, Prepare]] = {
     "changes": ("find what clears every check, over all tolerances and load cases", changes.prepare),
     "mounts": ("tell what every spring and mount carries at rest", mounts.prepare),
     "tune": ("tune chosen values to measured peaks, and tell what the peaks cannot tell", tune.prepare),
+    "vary": ("vary one or two values, or draw all at random within their tolerances", vary.prepare),
     "import": ("make a model file of a table of nodes and a table of springs", imports.prepare),
     "picture": ("draw the sheet, a mode, the scale or the complex plane, without a screen", _prepare_picture),
 }

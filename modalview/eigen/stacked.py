@@ -1,0 +1,164 @@
+"""All frequencies of one small model at many values, as one stack of matrices."""
+
+from dataclasses import dataclass
+
+import numpy as np
+import numpy.typing as npt
+import scipy.sparse as sp
+
+from modalview.assembly.assemble import Assembly
+from modalview.assembly.termsets import TermSet
+from modalview.errors import InputError, NumericalError
+
+Array = npt.NDArray[np.float64]
+
+# Dense matrices are stacked: beyond this many coordinates one model at a time is as quick.
+LARGEST_STACKED = 300
+# Numbers of one stack, so that it stays in the processor's cache (measured: larger is slower).
+STACK_NUMBERS = 200_000
+
+
+@dataclass(frozen=True, slots=True, eq=False)
+class Filling:
+    """Matrices of rank-one terms at many values: sum v_i r_i r_i^T with v_i a product of typed values.
+
+    Parameters
+    ----------
+    products : csr_array (t, n * n)
+        r_i r_i^T of every term, row by row.
+    factor : array (t,)
+    product_of : int array (t, f)
+        Which values a term is the product of; one past the last stands for 1.
+    size : int
+        n.
+    """
+
+    products: sp.csr_array
+    factor: Array
+    product_of: npt.NDArray[np.int64]
+    size: int
+
+    @classmethod
+    def of(cls, terms: TermSet) -> "Filling":
+        """Take up the terms of a structure."""
+        rows = terms.rows.toarray()
+        t, n = rows.shape
+        products = sp.csr_array(np.einsum("ti,tj->tij", rows, rows).reshape(t, n * n))
+        return cls(products, terms.factor, terms.product_of, n)
+
+    def at(self, values: Array) -> Array:
+        """Return the matrices (s, n, n) at values (s, parameters)."""
+        padded = np.concatenate([values, np.ones((len(values), 1))], axis=1)
+        sizes = self.factor * padded[:, self.product_of].prod(axis=2)
+        # Sparse from the right: one product over the stored entries for the whole stack.
+        filled = np.asarray((self.products.T @ sizes.T).T)
+        return filled.reshape(len(values), self.size, self.size)
+
+
+@dataclass(frozen=True, slots=True, eq=False)
+class Stack:
+    """What gives the frequencies of one structure at many values; small, and quick to send elsewhere.
+
+    Parameters
+    ----------
+    stiffness, mass : Filling
+    massless : bool array (n,)
+    rigid_body : int
+        Number of modes at zero, which no value changes.
+    """
+
+    stiffness: Filling
+    mass: Filling
+    massless: npt.NDArray[np.bool_]
+    rigid_body: int
+
+    @classmethod
+    def of(cls, assembly: Assembly) -> "Stack":
+        """Take up a model.
+
+        Raises
+        ------
+        InputError
+            More than 300 coordinates.
+        """
+        if assembly.n > LARGEST_STACKED:
+            raise InputError(
+                f"The model has {assembly.n} degrees of freedom; values are varied in models of up to "
+                f"{LARGEST_STACKED}. Hold directions that do not matter, or join bodies that move as one."
+            )
+        structure = assembly.structure
+        return cls(
+            Filling.of(structure.stiffness),
+            Filling.of(structure.mass),
+            structure.coordinates.massless,
+            structure.rigid_body.shape[1],
+        )
+
+    @property
+    def modes(self) -> int:
+        """Number of modes."""
+        return int((~self.massless).sum())
+
+    def eigenvalues(self, values: Array) -> Array:
+        """Return all eigenvalues (s, modes), ascending, rad^2/s^2, at values (s, parameters), SI.
+
+        Parameters
+        ----------
+        values : array (s, parameters)
+            Stiffnesses and masses above zero, in the order of the assembly's parameters.
+
+        Returns
+        -------
+        array (s, modes)
+            Those of rigid-body modes are exactly 0. Absolute error about modes * u * the largest; no
+            interval is proven.
+
+        Raises
+        ------
+        NumericalError
+            A mass matrix is not positive definite.
+        """
+        found = np.empty((len(values), self.modes))
+        step = max(1, STACK_NUMBERS // max(self.stiffness.size**2, 1))
+        for start in range(0, len(values), step):
+            part = values[start : start + step]
+            found[start : start + step] = self._of(self.stiffness.at(part), self.mass.at(part))
+        return found
+
+    def _of(self, K: Array, M: Array) -> Array:
+        eigenvalues: Array = np.maximum(np.linalg.eigvalsh(standard_forms(K, M, self.massless)), 0.0)
+        eigenvalues[:, : self.rigid_body] = 0.0
+        return eigenvalues
+
+
+def standard_forms(K: Array, M: Array, massless: npt.NDArray[np.bool_]) -> Array:
+    """Return S = L^-1 K L^-T with M = L L^T of every pencil of a stack (s, m, m), massless ones condensed.
+
+    K may be overwritten.
+
+    Parameters
+    ----------
+    K, M : array (s, n, n)
+        Rows and columns of massless coordinates are zero in M.
+    massless : bool array (n,)
+
+    Notes
+    -----
+    Static condensation: R. J. Guyan (1965), AIAA Journal 3, 380; exact for coordinates without mass.
+    """
+    if massless.any():
+        kept = ~massless
+        inner, across = K[:, massless][:, :, massless], K[:, massless][:, :, kept]
+        K = K[:, kept][:, :, kept] - across.transpose(0, 2, 1) @ np.linalg.solve(inner, across)
+        M = M[:, kept][:, :, kept]
+    if not np.any(M[:, ~np.eye(M.shape[1], dtype=bool)]):
+        root = 1 / np.sqrt(np.diagonal(M, axis1=1, axis2=2))
+        K *= root[:, :, None]
+        K *= root[:, None, :]
+        return K
+    try:
+        lower = np.linalg.cholesky(M)
+    except np.linalg.LinAlgError as error:
+        raise NumericalError("The mass matrix is not positive definite at some of the values.") from error
+    half = np.linalg.solve(lower, K)
+    return np.asarray(np.linalg.solve(lower, half.transpose(0, 2, 1)))
