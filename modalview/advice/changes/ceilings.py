@@ -51,23 +51,22 @@ def reach(state: State, variable: Variable) -> Reach | None:
     unit = np.outer(pencil.scale, pencil.scale)
     K, M = pencil.K.toarray() / unit, pencil.M.toarray() / unit
     rows = columns_of(state, Case.NOMINAL, variable).T / pencil.scale
-    own = rows.T @ rows
     with one_blas_thread():
         held = _null_space(rows)
         rank = pencil.n - held.shape[1]
+        rest = _without(state, variable) / unit
         if variable.family == "mass":
-            zero = _finite(K, M - own)
-            bound = np.concatenate([np.zeros(rank), _finite(held.T @ K @ held, held.T @ (M - own) @ held)])
+            zero = _finite(K, rest)
+            bound = np.concatenate([np.zeros(rank), _finite(held.T @ K @ held, held.T @ rest @ held)])
         else:
-            rest = _without(state, variable) / unit
             zero, bound = _finite(rest, M), _finite(held.T @ rest @ held, held.T @ M @ held)
     return Reach(_filled(zero, pencil.modes), _filled(bound, pencil.modes))
 
 
 def _without(state: State, variable: Variable) -> Array:
-    """Return K without the terms of a variable, summed from the terms that stay."""
-    gone = dict.fromkeys(variable.members, 0.0)
-    found: Array = state.pencil_with(Case.NOMINAL, gone).K.toarray()
+    """Return K, or M of a mass, without the terms of a variable: summed from the terms that stay."""
+    rest = state.pencil_with(Case.NOMINAL, dict.fromkeys(variable.members, 0.0))
+    found: Array = (rest.M if variable.family == "mass" else rest.K).toarray()
     return found
 
 
