@@ -2,8 +2,10 @@
 
 from collections.abc import Callable
 from dataclasses import dataclass
+from itertools import pairwise
 
 from PySide6.QtCore import Qt
+from PySide6.QtGui import QKeyEvent
 from PySide6.QtWidgets import (
     QDialog,
     QDialogButtonBox,
@@ -21,6 +23,9 @@ from PySide6.QtWidgets import (
 from modalview.errors import FaultsError
 from modalview.model.parts import Model, Motion
 from modalview.model.templates import MACHINE_FIELDS, TEMPLATES, Template, TemplateField, build
+
+# Of a character's mean width: a value with its unit, such as "4*1.75e8 N/m".
+_VALUE_WIDE = 17
 
 
 @dataclass(frozen=True, slots=True)
@@ -69,6 +74,7 @@ class NewSheet(QDialog):
         scroll = QScrollArea(self)
         scroll.setWidgetResizable(True)
         scroll.setFrameShape(QScrollArea.Shape.NoFrame)
+        scroll.setFocusPolicy(Qt.FocusPolicy.NoFocus)  # Tab leads to its lines, not to it
         scroll.setWidget(self._form)
         self.fields: dict[str, QLineEdit] = {}
         self.reasons: dict[str, QLabel] = {}
@@ -88,22 +94,32 @@ class NewSheet(QDialog):
         layout.addLayout(row, 1)
         layout.addWidget(self.buttons)
         self.list.currentRowChanged.connect(self._show)
-        self.list.itemActivated.connect(lambda _item: self._on_activated())
+        self.list.itemDoubleClicked.connect(lambda _item: self._on_activated())
         self.list.setCurrentRow(0)
         character = self.fontMetrics().averageCharWidth()
-        self.resize(96 * character, 30 * self.fontMetrics().height())
+        self.resize(110 * character, 30 * self.fontMetrics().height())
 
     @property
     def choice(self) -> Choice:
         """What is marked in the list."""
         return CHOICES[max(self.list.currentRow(), 0)]
 
+    def keyPressEvent(self, event: QKeyEvent) -> None:  # noqa: N802  (Qt's name)
+        """Let Enter on a starting point lead to its numbers: it must not begin before they are seen."""
+        enter = event.key() in (Qt.Key.Key_Return, Qt.Key.Key_Enter)
+        if enter and self.list.hasFocus():
+            self._on_activated()
+        else:
+            super().keyPressEvent(event)
+
     def _on_activated(self) -> None:
         """Begin an empty sheet; go to the first number of a starting point."""
         if self.choice.template is None:
             self.accept_choice()
         else:
-            next(iter(self.fields.values())).setFocus()
+            first = next(iter(self.fields.values()))
+            first.setFocus()
+            first.selectAll()
 
     def _show(self) -> None:
         self.sentence.setText(self.choice.sentence)
@@ -117,12 +133,15 @@ class NewSheet(QDialog):
         asked = () if template is None else (*template.fields, *MACHINE_FIELDS)
         for number, field in enumerate(asked):
             self._add(number, field)
+        for one, following in pairwise((self.list, *self.fields.values(), self.go)):
+            QWidget.setTabOrder(one, following)
         self._grid.setRowStretch(2 * len(CHOICES) + 2 * 24, 1)
 
     def _add(self, number: int, field: TemplateField) -> None:
         label = QLabel(field.label, self._form)
         line = QLineEdit(self._kept.get((self.choice.title, field.name), field.default), self._form)
         line.setAccessibleName(field.label)
+        line.setMinimumWidth(_VALUE_WIDE * self.fontMetrics().averageCharWidth())
         if field.quantity is not None:
             line.setPlaceholderText(field.quantity.example)
         label.setBuddy(line)
