@@ -183,7 +183,7 @@ def _words(content: MountsContent, boxes: list[Floats], board: Board) -> list[It
     items: list[Item] = []
     for one, (x1, y1, x2, y2) in zip(content.mounts, boxes, strict=True):
         role = Role.BAD if one.overloaded or one.lifted else Role.INK
-        share = "" if one.share is None else f", {significant(100 * one.share, 3)} %"
+        share = "" if one.share is None else f", {significant(100 * one.share, 3)} % of rated"
         figures = Line(f"{one.load_text}{share}", role, Size.SMALL)
         down = Line(one.deflection_text, Role.MUTED, Size.SMALL)
         name = Line(one.label, Role.INK, Size.SMALL, bold=True)
