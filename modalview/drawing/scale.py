@@ -28,6 +28,7 @@ _BOUND, _COUNT = 0.61, 0.70
 _MODE = (0.79, 0.91)
 HAIR = np.array([0.0, -1.0, 0.0, 1.0])  # what a level line takes, pixels
 FAR_LABEL = 120.0  # pixels at most from what a label names
+LEAST_STEP = 6.0  # pixels that a mode has gone, for an arrow
 MANY = 60  # discs or modes: more are drawn together
 LEAST_COLUMNS = 84.0  # pixels right of the labels; with less, the discs are folded away
 
@@ -93,7 +94,8 @@ def scale_drawing(
     discs = discs and frame.right - frame.labels >= LEAST_COLUMNS and len(content.discs) > 0
     pale = _discs(frame, content) if discs else ()
     items = _axes(frame) + _bands(frame, content.bands) + pale
-    items += _bounds(frame, content) + _counts(frame, content.counts) + _modes(frame, content.modes)
+    items += _bounds(frame, content) + _counts(frame, content.counts)
+    items += _before(frame, content) + _modes(frame, content.modes)
     items += _foretold(frame, content.foretold)
     items += _titles(frame, content, discs=discs)
     return Scale(Drawing(items, (0.0, 0.0, width, height), text_scale), axis)
@@ -102,7 +104,8 @@ def scale_drawing(
 def axis_range(content: ScaleContent) -> tuple[float, float]:
     """Return the lowest and the highest frequency of the axis in Hz, fitted to the model."""
     known = [hz for pair in (content.lowest, content.highest) if pair is not None for hz in pair]
-    known += [hz for mode in (*content.modes, *content.foretold) for hz in (mode.low, mode.high)]
+    every = (*content.modes, *content.foretold, *content.before)
+    known += [hz for mode in every for hz in (mode.low, mode.high)]
     known = [hz for hz in known if 0 < hz < np.inf]
     bands = [hz for band in content.bands for hz in (band.low, band.high)]
     low, high = min(known or bands or [1.0]), max(known or bands or [100.0])
@@ -375,6 +378,26 @@ def _foretold(frame: _Frame, modes: tuple[ScaleMode, ...]) -> tuple[Item, ...]:
     across = np.stack([0 * ticks + left, ticks, 0 * ticks + right, ticks], axis=1)
     numbers = _numbers(frame, shown, right + 5, Role.MUTED)
     return Lines(dashed(across, 4.0, 3.0), Role.MUTED, 1.6), *numbers
+
+
+def _before(frame: _Frame, content: ScaleContent) -> tuple[Item, ...]:
+    """Draw the modes before a change as pale ticks, and how far each has gone beside them."""
+    axis = frame.axis
+    shown = [mode for mode in content.before if axis.low_hz <= mode.hz <= axis.high_hz]
+    if not shown:
+        return ()
+    left, right = frame.x(_MODE[0]), frame.x(_MODE[1])
+    ticks = axis.ys_of(np.array([mode.hz for mode in shown]))
+    across = np.stack([0 * ticks + left - 8.0, ticks, 0 * ticks + right, ticks], axis=1)
+    items: list[Item] = [Lines(across, Role.MUTED, 1.8, 0.55)]
+    now = {mode.number: axis.y_of(mode.hz) for mode in content.modes or content.foretold}
+    pairs = [(y, now.get(mode.number, y)) for mode, y in zip(shown, ticks.tolist(), strict=True)]
+    gone = [(old, new) for old, new in pairs if abs(new - old) > LEAST_STEP]
+    if gone and len(shown) <= MANY:
+        start = np.array([[left - 5.0, old] for old, _ in gone])
+        step = np.array([[0.0, new - old] for old, new in gone])
+        items.append(Lines(arrow(start, step, 4.0), Role.MUTED, 1.3))
+    return tuple(items)
 
 
 def _numbers(frame: _Frame, shown: list[ScaleMode], x: float, role: Role | None = None) -> tuple[Item, ...]:

@@ -78,6 +78,8 @@ class ScaleContent:
         Elastic ones.
     foretold : tuple of ScaleMode
         What elastic modes found before an edit become by it; without ranges.
+    before : tuple of ScaleMode
+        Elastic modes before a change that was tried.
     rigid_body_modes : int
         Modes at 0, told below the axis.
     """
@@ -89,11 +91,16 @@ class ScaleContent:
     discs: Floats = field(default_factory=_none)
     modes: tuple[ScaleMode, ...] = ()
     foretold: tuple[ScaleMode, ...] = ()
+    before: tuple[ScaleMode, ...] = ()
     rigid_body_modes: int = 0
 
 
 def scale_content(
-    outlook: Known, solution: Solution | None = None, *, foretold: Mapping[int, float] | None = None
+    outlook: Known,
+    solution: Solution | None = None,
+    *,
+    foretold: Mapping[int, float] | None = None,
+    before: Mapping[int, float] | None = None,
 ) -> ScaleContent:
     """Take what the scale shows from what is known of a model.
 
@@ -104,6 +111,8 @@ def scale_content(
         Of the same model, if there is one.
     foretold : mapping of float or None
         Frequencies in Hz by the numbers of modes found before the last edit.
+    before : mapping of float or None
+        Frequencies in Hz by the numbers of the modes before a change that was tried.
     """
     machines = outlook.request.model.machines
     names = {one.id: one.name or one.id for one in machines} if len(machines) > 1 else {}
@@ -120,9 +129,14 @@ def scale_content(
         highest=bounds.highest_hz,
         discs=_discs_hz(bounds.symmetric),
         modes=_modes(bands, solution),
-        foretold=tuple(ScaleMode(n, hz, hz, hz) for n, hz in (foretold or {}).items() if hz > 0),
+        foretold=_ticks(foretold),
+        before=_ticks(before),
         rigid_body_modes=bounds.rigid_body_modes or 0,
     )
+
+
+def _ticks(found: Mapping[int, float] | None) -> tuple[ScaleMode, ...]:
+    return tuple(ScaleMode(n, hz, hz, hz) for n, hz in (found or {}).items() if hz > 0)
 
 
 def _band(check: Check, machine: str) -> ScaleBand:

@@ -18,11 +18,17 @@ OLD = "Out of date: of the model before the last edit"
 class ChartPage(QWidget):
     """A chart with its tables, or one sentence that says what is missing and a button that helps."""
 
-    def __init__(self, canvas: ChartCanvas, inquiry: Inquiry, parent: QWidget | None = None) -> None:
+    def __init__(
+        self,
+        canvas: ChartCanvas,
+        inquiry: Inquiry,
+        parent: QWidget | None = None,
+        room: ChartRoom | None = None,
+    ) -> None:
         super().__init__(parent)
         self.inquiry, self.canvas = inquiry, canvas
         inquiry.setParent(self)
-        self.room = ChartRoom(canvas, self)
+        self.room = room or ChartRoom(canvas, self)
         self.controls = QHBoxLayout()
         self.controls.setContentsMargins(8, 2, 8, 0)
         self.controls.setSpacing(8)

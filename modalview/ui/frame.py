@@ -229,6 +229,10 @@ class Frame(QMainWindow):
         self.below.show_page("plane")
         self.plane.setFocus()
 
+    def on_go_to_changes(self) -> None:
+        """Give the keyboard to the options that clear the model."""
+        self._go_to_chart("changes")
+
     def on_go_to_response(self) -> None:
         """Give the keyboard to the response chart."""
         self._go_to_chart("response")

@@ -65,3 +65,22 @@ def mounts(model: Model, details: tuple[Any, ...], stopped: Callable[[], bool]) 
     del details
     found = mounts_at_rest(Request(model, cancelled=stopped))
     return replace(found, request=replace(found.request, cancelled=never))
+
+
+def changes(model: Model, details: tuple[Any, ...], stopped: Callable[[], bool]) -> Any:
+    """Return what the page of changes shows (drawing.changescontent)."""
+    from modalview.drawing.changescontent import changes_content, clear_by  # noqa: PLC0415
+    from modalview.study.changes import ChangesRequest  # noqa: PLC0415
+    from modalview.study.changes import changes as look_for  # noqa: PLC0415
+    from modalview.study.look import look  # noqa: PLC0415
+    from modalview.study.present import present  # noqa: PLC0415
+    from modalview.study.remedies import RemediesRequest, remedies  # noqa: PLC0415
+    from modalview.study.results import Request  # noqa: PLC0415
+
+    del details
+    request = Request(model, cancelled=stopped)
+    outlook = look(request)
+    found = look_for(ChangesRequest(request))
+    others = remedies(RemediesRequest(request))
+    margin = clear_by(present(request)) if found.clear_now and outlook.checks else ""
+    return changes_content(outlook, found, others, outlook.assembly.parameters, margin)

@@ -16,6 +16,7 @@ from PySide6.QtWidgets import (
     QWidget,
 )
 
+from modalview.ui.beforestrip import BeforeStrip
 from modalview.ui.canvas import painted
 from modalview.ui.theme import LIGHT, Theme
 from modalview.units.show import significant
@@ -29,6 +30,7 @@ class ScaleCanvas(QWidget):
         self._outlook: Any = None
         self._solution: Any = None
         self._foretold: Mapping[int, float] | None = None
+        self._before: Mapping[int, float] | None = None
         self._scale: Any = None
         self._cache: QPixmap | None = None
         self._discs = True
@@ -42,6 +44,11 @@ class ScaleCanvas(QWidget):
         """Show what is known (study.results.Known) and the modes of the same model, found or foretold."""
         self._outlook, self._solution, self._foretold = outlook, solution, foretold
         self.setAccessibleDescription(_in_words(outlook))
+        self._forget()
+
+    def show_before(self, before: Mapping[int, float] | None) -> None:
+        """Show pale the modes before a change that is tried, by number in Hz; None shows none."""
+        self._before = before
         self._forget()
 
     def show_discs(self, shown: bool) -> None:  # noqa: FBT001  (a slot)
@@ -61,7 +68,9 @@ class ScaleCanvas(QWidget):
     def _build(self) -> None:
         from modalview.drawing import scale, scalecontent  # noqa: PLC0415  (numpy comes after the first paint)
 
-        content = scalecontent.scale_content(self._outlook, solution=self._solution, foretold=self._foretold)
+        content = scalecontent.scale_content(
+            self._outlook, solution=self._solution, foretold=self._foretold, before=self._before
+        )
         self._scale = scale.scale_drawing(
             content, self.width(), self.height(), text_scale=self._text_scale, discs=self._discs
         )
@@ -118,6 +127,8 @@ class ScalePanel(QFrame):
         layout.setContentsMargins(4, 8, 2, 4)
         layout.setSpacing(2)
         layout.addLayout(top)
+        self.before = BeforeStrip(self)
+        layout.addWidget(self.before)
         layout.addWidget(self.canvas, 1)
 
     def stand_alone(self, *, alone: bool) -> None:

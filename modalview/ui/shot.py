@@ -40,7 +40,7 @@ def main(arguments: Sequence[str] | None = None) -> int:
 
 
 _VIEWS = ("turned", "front", "side", "top")
-_PAGES = ("sheet", "modes", "damped", "plane", "values", "response", "speeds", "mounts")
+_PAGES = ("sheet", "modes", "damped", "plane", "values", "changes", "response", "speeds", "mounts")
 
 
 def _parser() -> argparse.ArgumentParser:

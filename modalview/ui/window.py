@@ -23,6 +23,7 @@ from modalview.ui.ondisk import DiskStrip, FileWatch
 from modalview.ui.printing import Printing
 from modalview.ui.settings import Setting, Settings
 from modalview.ui.sketch.sketching import Sketching
+from modalview.ui.trying import Trying
 from modalview.ui.viewing import Viewing
 from modalview.ui.worker import Worker
 
@@ -67,6 +68,7 @@ class Window(Frame):
         self.sketching = Sketching(self)  # hears of a change after the sheet was told
         self.sketching.hand.chosen_changed.connect(self.charts.on_chosen)
         self.viewing = Viewing(self)
+        self.trying = Trying(self)
         self._recall()
         self.show_document()
 
@@ -80,6 +82,7 @@ class Window(Frame):
         self._patience.timeout.connect(lambda: self._tell_reading(self._patience.property("what")))
         self.analysis.outlook_changed.connect(self.show_known)
         self.analysis.doubts_changed.connect(self.results.show_doubts)
+        self.analysis.doubts_changed.connect(lambda: self.banner.show_analysis(self.analysis))
         self.analysis.solution_changed.connect(self.show_modes)
         self.analysis.damped_changed.connect(self.show_damped)
         self.analysis.busy_changed.connect(self.show_busy)
@@ -176,10 +179,13 @@ class Window(Frame):
         if document.model is None:
             self.setWindowTitle("Keepclear[*]")
             return
-        title = document.model.title or (document.name if document.path else "untitled")
+        title = document.model.title
         file = "example" if document.example else document.name
         file += ", recovered" if document.recovered else ""
-        self.setWindowTitle(f"{title} ({file})[*] - Keepclear")
+        if title or not document.path:
+            self.setWindowTitle(f"{title or 'untitled'} ({file})[*] - Keepclear")
+        else:
+            self.setWindowTitle(f"{file}[*] - Keepclear")
 
     def on_opened(self) -> None:
         """Another model: everything anew."""
@@ -216,7 +222,7 @@ class Window(Frame):
             self.sketching.show_units(self.system_of_units())
             self.charts.set_system(self.system_of_units())
 
-    def _show_title(self, checked: str, freedoms: int) -> None:
+    def _show_title(self, checked: str = "not yet", freedoms: int | None = None) -> None:
         from modalview.drawing import furniture  # noqa: PLC0415  (numpy comes after the first paint)
 
         self.sheet.show_title(furniture.title_lines(self.document.model, checked=checked, freedoms=freedoms))
@@ -234,6 +240,8 @@ class Window(Frame):
         self.scale.canvas.show_results(outlook, solution, self.analysis.foretold)
         if outlook is not None:
             self._show_title(str(outlook.verdict or "nothing to check"), outlook.coordinates)
+        elif self.analysis.refusal is not None and self.document.model is not None:
+            self._show_title()
         self.banner.show_analysis(self.analysis)
         self.reasons.show_known(outlook, solution)
         if self.analysis.solution is None:
