@@ -28,7 +28,7 @@ from modalview.study import Request, look, solve
 quick = settings(
     derandomize=True,
     deadline=None,
-    max_examples=12,
+    max_examples=6,
     phases=(Phase.explicit, Phase.generate),
     suppress_health_check=[HealthCheck.too_slow, HealthCheck.filter_too_much, HealthCheck.data_too_large],
 )

@@ -56,7 +56,7 @@ def reach(state: State, variable: Variable) -> Reach | None:
         rank = pencil.n - held.shape[1]
         rest = _without(state, variable) / unit
         if variable.family == "mass":
-            zero = _finite(K, rest)
+            zero = _with_rigid(_finite(K, rest), pencil.rigid_body.shape[1])
             bound = np.concatenate([np.zeros(rank), _finite(held.T @ K @ held, held.T @ rest @ held)])
         else:
             zero, bound = _finite(rest, M), _finite(held.T @ rest @ held, held.T @ M @ held)
@@ -96,6 +96,15 @@ def _finite(K: Array, M: Array) -> Array:
     values[values < NOTHING * max(float(values.max(initial=0.0)), 0.0)] = 0.0
     found: Array = values
     return found
+
+
+def _with_rigid(values: Array, number: int) -> Array:
+    """Put zeros before the values until there are as many as rigid-body modes.
+
+    What nothing resists stays at zero however little mass it moves; with none at all it would be no mode.
+    """
+    missing = max(0, number - int((values == 0).sum()))
+    return np.concatenate([np.zeros(missing), values])
 
 
 def _filled(values: Array, modes: int) -> Array:

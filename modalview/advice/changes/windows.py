@@ -17,7 +17,9 @@ from modalview.assembly.parameters import Case
 Array = npt.NDArray[np.float64]
 
 # Ends are shown with so few digits where the window is wide enough, else with more.
-DIGITS = (4, 5, 6)
+DIGITS = (4, 5, 6, 7)
+# More digits are shown where fewer would leave less than this share of a window.
+KEPT = 0.95
 # The last digit steps inward so often where rounding leaves the count at an end open.
 STEPS = 3
 # An open end is proven so far beyond the other end, and beyond today's value.
@@ -169,13 +171,19 @@ def _window(
     for digits in DIGITS:
         for inward in range(STEPS):
             last = _rounded(span, shown, digits, inward) or last
-            if last is None or not prove:
-                continue
+            if last is None or (digits < DIGITS[-1] and not _keeps(last)):
+                break
+            if not prove:
+                return last
             if proves(gates, variable, last.low / shown.nominal, last.high / shown.nominal):
                 return replace(last, proven=True)
-        if last is not None and not prove:
-            return last
     return last
+
+
+def _keeps(window: Window) -> bool:
+    """Return whether rounding leaves most of a window."""
+    low, high = window.exact
+    return high == math.inf or window.high - window.low >= KEPT * (high - low)
 
 
 def _rounded(span: Span, shown: Shown, digits: int, inward: int) -> Window | None:
