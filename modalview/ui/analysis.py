@@ -161,3 +161,5 @@ class Analysis(QObject):
         self.refusal = error
         self._set_finding(False)
         self.outlook_changed.emit()
+        if self.solution is not None:
+            self.solution_changed.emit()  # modes of a model before do not wait any longer to be told as old

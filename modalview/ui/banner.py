@@ -18,7 +18,7 @@ from PySide6.QtWidgets import (
 from modalview.ui.analysis import Analysis
 from modalview.ui.symbols import VerdictSign
 from modalview.ui.theme import LIGHT, Theme
-from modalview.ui.unfinished import missing, refusal_text, unchecked
+from modalview.ui.unfinished import missing, refusal_text, unchecked, ungiven
 from modalview.ui.wording import kept_together, one_line
 
 _BLINK_MS = 250
@@ -226,4 +226,4 @@ def _said(analysis: Analysis) -> tuple[str | None, str, str]:
     verdict = analysis.outlook.verdict
     if verdict is None:
         return None, "", unchecked(analysis.model) or sentence
-    return str(verdict), _WORDS[str(verdict)], sentence
+    return str(verdict), _WORDS[str(verdict)], f"{ungiven(analysis.model, analysis.doubts)}{sentence}"

@@ -151,8 +151,8 @@ class Filing(QObject):
         """Ask for a place and save there."""
         dialog = self._file_dialog("Save the model", QFileDialog.AcceptMode.AcceptSave)
         dialog.setDefaultSuffix(SUFFIX.removeprefix("."))
-        if self._document.path is not None:
-            dialog.selectFile(self._document.path.name)
+        title = (self._document.model.title or "") if self._document.model is not None else ""
+        dialog.selectFile(self._document.path.name if self._document.path is not None else file_name(title))
         dialog.fileSelected.connect(lambda path: self._write(Path(path), then))
         dialog.open()
 
@@ -252,6 +252,19 @@ class Filing(QObject):
         return dialog
 
 
+def file_name(title: str) -> str:
+    """Return a name for the file of a model with a title, without what some system bars from names.
+
+    >>> file_name("Pump P-3: as built / 2"), file_name("")
+    ('Pump P-3- as built - 2.keepclear', '')
+    """
+    kept = "".join("-" if one in _BARRED or not one.isprintable() else one for one in title)
+    kept = kept.strip(" .")[:_LONGEST]
+    return f"{kept}{SUFFIX}" if kept else ""
+
+
+# Barred from file names by one system or another; and how long a proposed name may be.
+_BARRED, _LONGEST = '\\/:*?"<>|', 80
 _GONE = "moved, renamed or deleted"
 
 

@@ -1,8 +1,9 @@
 """What a drawing still lacks before it can be checked, in words of the window: which key, what to drag."""
 
+from collections.abc import Sequence
 from typing import Any
 
-from modalview.advice.doubt import listed, plain
+from modalview.advice.doubt import Doubt, listed, plain
 from modalview.errors import FaultsError
 from modalview.model.parts import FREEDOMS, Body, Model, Motion
 
@@ -58,6 +59,23 @@ def unchecked(model: Model | None) -> str:
         "Nothing to check yet: press F and click on the body where an order of a machine's speed, "
         "or a fixed frequency, acts."
     )
+
+
+def ungiven(model: Model | None, doubts: Sequence[Doubt]) -> str:
+    """Return how a verdict begins that hangs on values that nobody has given; "" where all are given.
+
+    A verdict in green on the program's own numbers would be taken for one about the machine.
+
+    >>> from modalview.model.parts import Body
+    >>> ungiven(Model(bodies=(Body(id="b1", name="fan"),)), [Doubt("starting value", ("b1",), "", "")])
+    'With starting values of fan that nobody has given yet: '
+    """
+    if model is None:
+        return ""
+    parts = dict.fromkeys(part for one in doubts if one.rule == "starting value" for part in one.parts)
+    called = {part.id: plain(part) for part in (*model.bodies, *model.links)}
+    names = [called[part] for part in parts if part in called]
+    return f"With starting values of {listed(names)} that nobody has given yet: " if names else ""
 
 
 def refusal_text(refusal: Any) -> str:

@@ -4,9 +4,10 @@ from threading import Event
 
 import pytest
 from conftest import FAN, PUMP, save, settle
-from PySide6.QtWidgets import QMessageBox
+from PySide6.QtWidgets import QFileDialog, QLineEdit, QMessageBox
 
 from modalview.errors import FileAccessError
+from modalview.model.parts import Model
 from modalview.store import read_model, save_model
 from modalview.ui import document as documents
 
@@ -183,3 +184,11 @@ def test_a_save_under_way_is_no_change_by_another_program(own, disk, qtbot):
     own.watch.look()
     qtbot.waitUntil(lambda: not own.watch.looking.busy)
     assert told == []
+
+
+def test_the_name_of_a_new_file_is_proposed_from_the_title(window):
+    window.document.start(Model(title="Pump P-3: as built"))
+    window.filing.save_as()
+    dialog = window.findChild(QFileDialog)
+    assert dialog.findChild(QLineEdit, "fileNameEdit").text() == "Pump P-3- as built.keepclear"
+    dialog.close()

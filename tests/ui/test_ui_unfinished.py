@@ -1,5 +1,7 @@
 """A drawing that goes on is told as unfinished, with what to do next; an empty sheet says how to begin."""
 
+from dataclasses import replace
+
 import pytest
 from conftest import settle
 from pen import Pen
@@ -8,6 +10,7 @@ from PySide6.QtCore import Qt
 from modalview.drawing.primitives import Text
 from modalview.errors import Fault, InputError, ModelFaultsError
 from modalview.model.parts import Body, Model, Motion
+from modalview.store import save_model
 from modalview.ui.unfinished import invitation, missing, refusal_text, unchecked
 
 FILE_TALK = ("[", "]", '"', "dof", "bodies:", "floats")
@@ -74,3 +77,38 @@ def test_what_is_wrong_with_the_whole_is_told_without_a_place():
     assert refusal_text(told) == 'gear "g": has no teeth; gear "h": has no teeth'
     assert refusal_text(InputError("too\nlarge")) == "too large"
     assert missing(None) == unchecked(None) == ""
+
+
+def test_what_was_known_of_a_model_that_lacks_a_part_now_is_told_as_old(pump, qtbot):
+    pump.sketching.editing.choose_all()
+    pump.sketching.hand.delete()
+    settle(qtbot, pump)
+    assert pump.banner.word.text() == "Not finished"
+    assert pump.sheet._title.checked == "not yet"
+    assert pump.sheet._title.motion == "single axis · 0 DOF"
+    assert pump.play_bar.name.text().endswith("(out of date)")
+
+
+def test_a_verdict_on_values_that_nobody_gave_says_so_first(pen, qtbot):
+    pen.window.document.start(Model(motion=Motion.SINGLE_AXIS))
+    pen.tool("M")
+    pen.click(pen.at(0.0, 1.0))
+    pen.type("", "", "fan")
+    pen.tool("S")
+    pen.drag(pen.part("fan"), pen.at(0.0, -0.5))
+    pen.type("1e6 N/m", "", "leg")
+    pen.tool("F")
+    pen.click(pen.part("fan"))
+    pen.type("drive", "9000 rpm", "20 %", "1", "", "", "unbalance")
+    word, sentence = said(pen, qtbot)
+    assert word == "Clear"
+    assert sentence.startswith("With starting values of fan that nobody has given yet: 1× unbalance of")
+
+
+def test_the_title_bar_names_a_model_without_a_title_once(pump, tmp_path):
+    path = tmp_path / "fan.keepclear"
+    save_model(replace(pump.document.model, title=""), path, known=None)
+    pump.document.open(path)
+    assert pump.windowTitle() == "fan.keepclear[*] - Keepclear"
+    pump.document.start(Model(motion=Motion.SINGLE_AXIS))
+    assert pump.windowTitle() == "untitled (not saved yet)[*] - Keepclear"
