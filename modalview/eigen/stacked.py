@@ -48,11 +48,25 @@ class Filling:
 
     def at(self, values: Array) -> Array:
         """Return the matrices (s, n, n) at values (s, parameters)."""
-        padded = np.concatenate([values, np.ones((len(values), 1))], axis=1)
-        sizes = self.factor * padded[:, self.product_of].prod(axis=2)
-        # Sparse from the right: one product over the stored entries for the whole stack.
-        filled = np.asarray((self.products.T @ sizes.T).T)
+        # One product over the stored entries for the whole stack.
+        filled = np.asarray((self.products.T @ self._sizes(values)).T)
         return filled.reshape(len(values), self.size, self.size)
+
+    def diagonals_at(self, values: Array) -> Array:
+        """Return the diagonals (s, n) of the same matrices."""
+        diagonal = self.products[:, :: self.size + 1]
+        return np.asarray((diagonal.T @ self._sizes(values)).T)
+
+    @property
+    def diagonal(self) -> bool:
+        """Whether the matrices have entries on their diagonals alone."""
+        return bool(np.all(self.products.indices % (self.size + 1) == 0))
+
+    def _sizes(self, values: Array) -> Array:
+        """Return the value of every term (t, s)."""
+        padded = np.concatenate([values, np.ones((len(values), 1))], axis=1).T
+        sizes: Array = self.factor[:, None] * padded[self.product_of].prod(axis=1)
+        return sizes
 
 
 @dataclass(frozen=True, slots=True, eq=False)
@@ -121,20 +135,23 @@ class Stack:
         found = np.empty((len(values), self.modes))
         step = max(1, STACK_NUMBERS // max(self.stiffness.size**2, 1))
         for start in range(0, len(values), step):
-            part = values[start : start + step]
-            found[start : start + step] = self._of(self.stiffness.at(part), self.mass.at(part))
+            found[start : start + step] = np.linalg.eigvalsh(self._standard(values[start : start + step]))
+        np.maximum(found, 0.0, out=found)
+        found[:, : self.rigid_body] = 0.0
         return found
 
-    def _of(self, K: Array, M: Array) -> Array:
-        eigenvalues: Array = np.maximum(np.linalg.eigvalsh(standard_forms(K, M, self.massless)), 0.0)
-        eigenvalues[:, : self.rigid_body] = 0.0
-        return eigenvalues
+    def _standard(self, values: Array) -> Array:
+        K = self.stiffness.at(values)
+        if self.massless.any() or not self.mass.diagonal:
+            return standard_forms(K, self.mass.at(values), self.massless)
+        root = 1 / np.sqrt(self.mass.diagonals_at(values))
+        K *= root[:, :, None]
+        K *= root[:, None, :]
+        return K
 
 
 def standard_forms(K: Array, M: Array, massless: npt.NDArray[np.bool_]) -> Array:
     """Return S = L^-1 K L^-T with M = L L^T of every pencil of a stack (s, m, m), massless ones condensed.
-
-    K may be overwritten.
 
     Parameters
     ----------
@@ -151,11 +168,6 @@ def standard_forms(K: Array, M: Array, massless: npt.NDArray[np.bool_]) -> Array
         inner, across = K[:, massless][:, :, massless], K[:, massless][:, :, kept]
         K = K[:, kept][:, :, kept] - across.transpose(0, 2, 1) @ np.linalg.solve(inner, across)
         M = M[:, kept][:, :, kept]
-    if not np.any(M[:, ~np.eye(M.shape[1], dtype=bool)]):
-        root = 1 / np.sqrt(np.diagonal(M, axis1=1, axis2=2))
-        K *= root[:, :, None]
-        K *= root[:, None, :]
-        return K
     try:
         lower = np.linalg.cholesky(M)
     except np.linalg.LinAlgError as error:

@@ -90,9 +90,11 @@ class EachTask:
 
 @dataclass(frozen=True, slots=True, eq=False)
 class Drawn:
-    """What a chunk found: values (s, v), eigenvalues (s, modes), motion (s, watches)."""
+    """What a chunk found: eigenvalues (s, modes), motion (s, watches).
 
-    values: Array
+    The values are not sent back: they are drawn again from the seed.
+    """
+
     eigenvalues: Array
     motion: Array
 
@@ -100,7 +102,7 @@ class Drawn:
 def stacked(task: StackTask) -> Drawn:
     """Find all frequencies of a chunk at once; pure, and sent to any worker."""
     values = task.spread.draw(np.random.default_rng(task.seed), task.count)
-    return Drawn(values, task.stack.eigenvalues(values), np.zeros((task.count, 0)))
+    return Drawn(task.stack.eigenvalues(values), np.zeros((task.count, 0)))
 
 
 def one_by_one(task: EachTask) -> Drawn:
@@ -113,7 +115,7 @@ def one_by_one(task: EachTask) -> Drawn:
         eigenvalues.append(Stack.of(assembly).eigenvalues(sample[None, :number])[0])
         if task.watchings:
             motion.append(amplitudes_at(_at(assembly, sample[:number]), task.watchings))
-    return Drawn(values, np.array(eigenvalues), np.array(motion).reshape(task.count, len(task.watchings)))
+    return Drawn(np.array(eigenvalues), np.array(motion).reshape(task.count, len(task.watchings)))
 
 
 def _moved(assembly: Assembly, geometry: Sequence[Chosen], numbers: Array) -> Assembly:
@@ -154,16 +156,13 @@ def sample(request: SampleRequest) -> Samples:
     spread = _spread(request, assembly, chosen)
     watching = watchings(assembly) if request.response else ()
     errand = Errand("random samples", request.cancelled, request.progress, request.executor)
+    cut = _cut(request, FEW if geometry or watching else CHUNK)
     if geometry or watching:
-        tasks = [
-            EachTask(assembly, geometry, spread, seed, count, watching) for seed, count in _cut(request, FEW)
-        ]
-        found = in_chunks(errand, one_by_one, tasks)
+        each = [EachTask(assembly, geometry, spread, seed, count, watching) for seed, count in cut]
+        found = in_chunks(errand, one_by_one, each)
     else:
         stack = Stack.of(assembly)
-        found = in_chunks(
-            errand, stacked, [StackTask(stack, spread, seed, count) for seed, count in _cut(request, CHUNK)]
-        )
+        found = in_chunks(errand, stacked, [StackTask(stack, spread, seed, count) for seed, count in cut])
     return _gathered(request, assembly, (chosen, spread, watching), found, start)
 
 
@@ -208,6 +207,7 @@ def _gathered(
     names = [(one.id, f"{one.label} {one.id[len(one.part) + 1 :]}") for one in assembly.parameters]
     names += [(one.name, one.label) for one in geometry]
     free = np.flatnonzero(spread.low < spread.high)
+    size = FEW if geometry or watching else CHUNK
     frequencies = np.sqrt(np.concatenate([one.eigenvalues for one in found])) / RAD_PER_HZ
     motion = np.concatenate([one.motion for one in found])
     nominal = Stack.of(assembly).eigenvalues(values_at(assembly.parameters, Case.NOMINAL)[None])[0]
@@ -215,7 +215,7 @@ def _gathered(
     return Samples(
         request=request,
         drawn=tuple(names[i] for i in free),
-        values=_fixed(np.concatenate([one.values[:, free] for one in found])),
+        values=_fixed(_drawn_again(request, spread, free, size)),
         frequencies_hz=_fixed(frequencies),
         nominal_hz=_fixed(np.sqrt(nominal) / RAD_PER_HZ),
         proven_hz=None if geometry else proven_ranges(assembly, spread),
@@ -228,6 +228,16 @@ def _gathered(
         notes=_notes(request, assembly, geometry),
         seconds=perf_counter() - start,
     )
+
+
+def _drawn_again(request: SampleRequest, spread: Spread, free: npt.NDArray[np.int64], size: int) -> Array:
+    """Return the values that every chunk drew (samples, free): drawing is quicker than sending."""
+    found = np.empty((request.samples, free.size))
+    done = 0
+    for seed, count in _cut(request, size):
+        found[done : done + count] = spread.draw(np.random.default_rng(seed), count)[:, free]
+        done += count
+    return found
 
 
 def _fixed(values: Array) -> Array:
