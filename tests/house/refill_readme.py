@@ -3,6 +3,7 @@
 import contextlib
 import io
 import re
+import shlex
 import textwrap
 from pathlib import Path
 
@@ -15,7 +16,7 @@ SHOWN = re.compile(r"^ {4}\$ keepclear (.+)\n(?:(?: {4}.*)?\n)+", re.MULTILINE)
 def present(found: re.Match[str]) -> str:
     """Return a command with what it prints now."""
     with contextlib.redirect_stdout(io.StringIO()) as output:
-        main(found[1].split())
+        main(shlex.split(found[1]))
     return textwrap.indent(f"$ keepclear {found[1]}\n{output.getvalue().strip()}\n", " " * 4) + "\n"
 
 

@@ -2,6 +2,7 @@
 
 import json
 import re
+import shlex
 import textwrap
 import tomllib
 from pathlib import Path
@@ -27,6 +28,8 @@ def test_readme_shows_output():
         "response",
         "mounts",
         "changes",
+        "tune",
+        "vary",
     ]
 
 
@@ -34,7 +37,7 @@ def test_readme_shows_output():
 def test_output_is_what_the_program_prints(block, capsys, monkeypatch):
     command, _, output = block.partition("\n")
     monkeypatch.chdir(ROOT)
-    status = main(command.split()[2:])
+    status = main(shlex.split(command)[2:])
     assert capsys.readouterr().out.strip() == output.strip()
     assert status == (1 if command.split()[2] in {"check", "speeds", "response"} else 0)
 
@@ -90,6 +93,7 @@ DAMPED = ("demo_models/6-vacuum-pump-absorber/absorber-210kg-damped.keepclear",)
 TRAIN = ("demo_models/3-air-compressor-train/as-built.keepclear",)
 RETROFIT = ("demo_models/6-vacuum-pump-absorber/absorber-105kg.keepclear",)
 GENSET = ("demo_models/4-standby-generator-set/raised-mounts.keepclear",)
+PEAKS = ("demo_models/5-raw-water-vertical-pump/after-bump-test.keepclear",)
 MATRICES = ("--stiffness", "tests/data/mikota_20/K.mtx", "--mass", "tests/data/mikota_20/M.mtx")
 BAND = ("--frequencies", "1 Hz", "--margin", "3 %")
 
@@ -108,6 +112,11 @@ BAND = ("--frequencies", "1 Hz", "--margin", "3 %")
         ("modes", *MATRICES, "--near", "1 Hz", "--count", "1"),
         *(("speeds", file) for file in (*PUMP, *TRAIN)),
         ("mounts", *GENSET),
+        ("tune", *PEAKS),
+        ("tune", *PEAKS, "--value", "sole.stiffness.rz=6e7 to 1e9 N m/rad"),
+        ("tune", *PEAKS, "--value", "motor.mass", "--value", "head.mass", "--value", "column.mass"),
+        ("vary", *PUMP, "--value", "k3"),
+        ("vary", *PUMP, "--samples", "9", "--response"),
         *(("changes", file) for file in (*PUMP, *RETROFIT)),
         *(("response", file) for file in (*PUMP, *TRAIN, *RETROFIT)),
     ],
