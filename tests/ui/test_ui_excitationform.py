@@ -128,6 +128,13 @@ def test_what_the_rules_refused_is_tried_anew_when_another_line_is_mended(docume
     assert document.model.machines[0].excitations[0].magnitude.torque.text == "150 N m"
 
 
+def test_a_margin_out_of_range_is_refused_before_the_next_line_is_reached(sheet, form):
+    form.show_at("m1", (0.0, 1.0), BESIDE)
+    by_keyboard(sheet, "fan", "900 rpm", "20")
+    assert sheet.window().focusWidget() is form.row("margin").value
+    assert 'which is 2000 %; write "20 %"' in form.row("margin").reason.text()
+
+
 def test_an_existing_machine_is_offered_and_asked_nothing_again(document, form):
     document.open(PUMP, example=True)
     form.show_at("motor", (0.0, 1.0), BESIDE)

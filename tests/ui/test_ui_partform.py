@@ -12,7 +12,7 @@ from modalview.model.values import STARTING, Entry
 from modalview.places import demo_models
 from modalview.store import dump_model
 from modalview.ui.document import Document
-from modalview.ui.sketch.floating import place_beside
+from modalview.ui.sketch.floating import kept_in_place, place_beside
 from modalview.ui.sketch.formrow import SEVERAL
 from modalview.ui.sketch.partform import PartForm
 
@@ -424,3 +424,16 @@ def test_a_link_just_drawn_asks_for_its_stiffness(document, sheet, form):
     press(sheet.window().focusWidget(), Qt.Key.Key_Return)
     assert part(document, link).stiffness.si == pytest.approx(900 * 9.80665 / 0.035)
     assert form.row("stiffness").converted.text() == "252170 N/m"
+
+
+def test_a_form_that_widens_while_it_is_typed_in_stands_still_unless_it_would_hide_its_part():
+    part, inside = QRect(141, 155, 140, 60), QRect(6, 6, 582, 422)
+    before = place_beside(QSize(322, 260), part, inside)
+    assert (before.x(), before.y()) == (266, 155)
+    wider = kept_in_place(before, QSize(340, 260), part, inside)
+    assert (wider.x(), wider.y()) == (248, 155)
+    taller = kept_in_place(before, QSize(322, 300), part, inside)
+    assert (taller.x(), taller.y()) == (266, 128)
+    over = kept_in_place(before, QSize(440, 100), part, inside)
+    assert over == place_beside(QSize(440, 100), part, inside)
+    assert not over.intersects(part)

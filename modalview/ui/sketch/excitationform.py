@@ -16,14 +16,25 @@ from modalview.model.adding_machines import add_excitation, add_machine
 from modalview.model.composites import read_composite
 from modalview.model.differences import checked_edit
 from modalview.model.forms import FormLine, bodies_of
-from modalview.model.parts import End, Excitation, Model, Motion, SpeedRange
+from modalview.model.parts import End, Excitation, Margin, Model, Motion, SpeedRange
+from modalview.model.rules_values import share
 from modalview.model.typed_machines import typed_magnitude, typed_margin, typed_rate, typed_speed
+from modalview.model.values import Entry
 from modalview.ui.document import Document
 from modalview.ui.sketch.floating import FloatingForm
 from modalview.ui.sketch.formrow import ChosenWord, FormRow, TypedLine
 from modalview.ui.values import converted
 from modalview.units import quantities as q
 from modalview.units.quantities import Quantity
+
+
+def _margin(text: str) -> Entry | Margin | None:
+    """Read a margin, and hold it to its rule at once: "20" is 2000 %."""
+    read = typed_margin(text)
+    for one in (read.below, read.above) if isinstance(read, Margin) else (read,):
+        for _key, reason in share("margin", one):
+            raise InputError(f"a margin {reason}")
+    return read
 
 
 @dataclass(frozen=True, slots=True)
@@ -69,7 +80,7 @@ _ASKED = (
         "margin",
         "margin wanted",
         "such as 15 %",
-        lambda text, _: typed_margin(text),
+        lambda text, _: _margin(text),
         _MARGIN_NEEDED,
         machine=True,
     ),

@@ -20,6 +20,8 @@ from modalview.ui.sketch.formrow import FormRow, TypedLine
 
 # Pixels between the form and what it is about, and from the edges of the sheet.
 _GAP, _EDGE = 12, 6
+# Share of what it is about that a form may come to cover before it goes elsewhere.
+_MOST_COVERED = 0.5
 
 
 def place_beside(size: QSize, beside: QRect, inside: QRect) -> QRect:
@@ -51,6 +53,27 @@ def place_beside(size: QSize, beside: QRect, inside: QRect) -> QRect:
     x = max(inside.left(), min(x, inside.right() + 1 - size.width()))
     y = max(inside.top(), min(y, inside.bottom() + 1 - size.height()))
     return QRect(x, y, size.width(), size.height())
+
+
+def kept_in_place(before: QRect, size: QSize, beside: QRect, inside: QRect) -> QRect:
+    """Return where a form of a new size goes so that it moves under no hand that types in it.
+
+    It stays, moved only as far as it must to lie inside; where it would cover most of what it is about, it
+    is placed anew.
+
+    >>> part, sheet = QRect(10, 10, 20, 20), QRect(0, 0, 170, 300)
+    >>> kept_in_place(QRect(41, 10, 100, 50), QSize(140, 60), part, sheet).x()
+    30
+    """
+    x = max(inside.left(), min(before.x(), inside.right() + 1 - size.width()))
+    y = max(inside.top(), min(before.y(), inside.bottom() + 1 - size.height()))
+    stays = QRect(x, y, size.width(), size.height())
+    covers = _area(stays.intersected(beside)) > max(_MOST_COVERED * _area(beside), _area(before & beside))
+    return place_beside(size, beside, inside) if covers else stays
+
+
+def _area(one: QRect) -> int:
+    return max(one.width(), 0) * max(one.height(), 0)
 
 
 class FloatingForm(QFrame):
@@ -99,11 +122,12 @@ class FloatingForm(QFrame):
         self._beside = beside
         self.show()
         self.raise_()
-        self.fit()
-        QTimer.singleShot(0, self, self.fit)  # new widgets know their size once they are shown
+        self.fit(anew=True)
+        # New widgets know their size once they are shown.
+        QTimer.singleShot(0, self, lambda: self.fit(anew=True))
 
-    def fit(self) -> None:
-        """Take the size that the lines need, and the place for it."""
+    def fit(self, *, anew: bool = False) -> None:
+        """Take the size that the lines need, and the place for it: where it stands, if it was placed."""
         if self.isHidden():
             return
         room = self.parentWidget().rect().adjusted(_EDGE, _EDGE, -_EDGE, -_EDGE)
@@ -121,7 +145,9 @@ class FloatingForm(QFrame):
         )
         if not fits:
             width = min(width + self.scroll.verticalScrollBar().sizeHint().width(), room.width())
-        self.setGeometry(place_beside(QSize(width, min(height, room.height())), self._beside, room))
+        size = QSize(width, min(height, room.height()))
+        placed = place_beside(size, self._beside, room)
+        self.setGeometry(placed if anew else kept_in_place(self.geometry(), size, self._beside, room))
 
     def _height_for(self, inner_width: int) -> int:
         """Return the height of the whole form when its lines are so wide; texts are broken into lines."""
