@@ -78,7 +78,7 @@ class Moved:
     edit : Rewrite
     text : str
     before, after : str
-        The place in words, with unit.
+        The place in words, with unit: "250 mm below", "1.51 m".
     """
 
     feet: Feet
@@ -261,7 +261,7 @@ def _told(model: Model, feet: Feet, to: float, after: Model, system: str) -> Mov
     if feet.kind == HEIGHT:
         way = "Raise" if to > feet.now else "Lower"
         step = show(abs(to - feet.now), q.LENGTH, system, 3)
-        text = f"{way} the {feet.number} feet of {feet.label} by {step}, to {there}"
+        text = f"{way} the {feet.number} feet of {feet.label} by {step}, to {there} its centre of gravity"
     else:
         way = "wider" if to > feet.now else "closer"
         along = "xyz"[feet.axis]
@@ -270,10 +270,9 @@ def _told(model: Model, feet: Feet, to: float, after: Model, system: str) -> Mov
 
 
 def _place(feet: Feet, place: float, system: str) -> str:
+    """Return a width, or a height against the centre of gravity: "250 mm below"."""
     if feet.kind == WIDTH:
         return show(place, q.LENGTH, system, 3)
     if abs(place) < STEP / 2:
-        return "the height of its centre of gravity"
-    return (
-        f"{show(abs(place), q.LENGTH, system, 3)} {'above' if place > 0 else 'below'} its centre of gravity"
-    )
+        return "level with"
+    return f"{show(abs(place), q.LENGTH, system, 3)} {'above' if place > 0 else 'below'}"

@@ -31,7 +31,7 @@ QUANTITIES = {
 }
 VERDICTS = {Verdict.CLEAR: "clear", Verdict.NOMINAL_ONLY: "nominal only", Verdict.IN_BAND: "in band"}
 ORDERS = 6  # columns of orders; of more, those with the least room
-WHAT, CHANGE, ROOM, COST = "what", "from → to", "room left", "cost elsewhere"
+WHAT, CHANGE, ROOM = "what", "from → to", "room left"
 ROOM_TIP = "Worst separation over all tolerances and load cases, less the margin wanted on that side"
 
 
@@ -82,6 +82,7 @@ class ValueAxis:
     now : float
         SI, or 1 for a factor of several.
     now_text : str
+        "" for a factor.
     tolerance : pair of float
         Lowest and highest within it; both ``now`` for an exact value.
     per : float
@@ -107,6 +108,12 @@ class ValueAxis:
     limits: tuple[float, float]
     clear_now: bool
     ceilings: tuple[str, ...]
+
+    @property
+    def today(self) -> str:
+        """What is said of today's value: "not clear at 175 kN/mm"."""
+        head = "clear" if self.clear_now else "not clear"
+        return f"{head} at {self.now_text}" if self.now_text else f"{head} as it is"
 
     def text_of(self, number: float) -> str:
         """Return a number of the axis with its unit.
@@ -167,8 +174,10 @@ def changes_content(
     system = known.request.model.units or "SI"
     options = [one for one in (*found.options, *others.options) if not found.clear_now]
     columns = _columns(options)
-    lines = [_line(one, columns) for one in options]
-    lines += [_speed_line(one, len(columns)) for one in others.speeds if one.edit is not None]
+    costs = tuple(dict.fromkeys(cost.what for one in options for cost in one.costs))
+    lines = [_line(one, columns, costs, found.windows) for one in options]
+    empty = len(columns) + len(costs)
+    lines += [_speed_line(one, empty) for one in others.speeds if one.edit is not None]
     of = {one.id: one for one in parameters}
     notes = [] if found.narrowing is None else [f"Tolerances: {found.narrowing.sentence}"]
     notes += [one.sentence for one in found.least if one.option is None]
@@ -178,7 +187,7 @@ def changes_content(
         sentence=margin if found.clear_now and margin else found.sentence,
         clear=found.clear_now,
         checks=bool(known.checks),
-        headings=(WHAT, CHANGE, ROOM, *(label for _, label in columns), COST),
+        headings=(WHAT, CHANGE, ROOM, *(label for _, label in columns), *costs),
         options=tuple(lines),
         values=tuple(_axis(one, of, system) for one in found.windows),
         notes=(*notes, *others.notes),
@@ -200,17 +209,28 @@ def _columns(options: Sequence[Option]) -> list[tuple[_Key, str]]:
     return [(key, label) for key, label in labels.items() if key in shown]
 
 
-def _line(one: Option, columns: Sequence[tuple[_Key, str]]) -> OptionLine:
+def _line(
+    one: Option,
+    columns: Sequence[tuple[_Key, str]],
+    costs: Sequence[str],
+    windows: Sequence[ValueWindows],
+) -> OptionLine:
     known = {(effect.check, effect.case): effect for effect in one.effects}
-    what, change = _what(one)
+    paid = {cost.what: f"{cost.before} → {cost.after}" for cost in one.costs}
+    value, what, change = _what(one, windows)
     room = one.worst.room if one.worst is not None else None
-    costs = "; ".join(f"{cost.what}: {cost.before} → {cost.after}" for cost in one.costs)
-    cells = [_effect_text(known.get(key)) for key, _ in columns]
-    value = one.changes[0].value if len(one.changes) == 1 else "+".join(c.value for c in one.changes)
-    detail = [one.text, one.claim, *map(_in_full, one.effects), costs, *one.cautions]
+    effects = [_effect_text(known.get(key)) for key, _ in columns]
+    spent = [f"{name}: {text}" for name, text in paid.items()]
+    detail = [one.text, one.claim, *map(_in_full, one.effects), *spent, *one.cautions]
     return OptionLine(
         text=one.text,
-        cells=(what, change, "" if room is None else room_text(room), *cells, costs or "none told"),
+        cells=(
+            what,
+            change,
+            "" if room is None else room_text(room),
+            *effects,
+            *(paid.get(name, "as before") for name in costs),
+        ),
         detail="\n".join(line for line in detail if line),
         edit=one.edit,
         clears=one.clears,
@@ -228,18 +248,23 @@ def room_text(room: float) -> str:
     return text.replace("-", "−")
 
 
-def _what(one: Option) -> tuple[str, str]:
-    """Return what an option changes, and from what to what."""
+def _what(one: Option, windows: Sequence[ValueWindows]) -> tuple[str, str, str]:
+    """Return the id of the value that an option changes, what that is, and from what to what."""
     changes = one.changes
     if one.kind is Kind.ABSORBER or not changes:
         what, _, values = one.text.partition(": ")
-        return what, values
-    if len(changes) > 3 and len({(c.before, c.after) for c in changes}) == 1:
-        return f"{changes[0].label} and {len(changes) - 1} more", f"{changes[0].before} → {changes[0].after}"
+        return "", what, values
+    if one.kind is Kind.ONE_VALUE and len(changes) > 1:
+        # Several by one factor are named as their windows are.
+        named = [window for window in windows if f" {window.label} " in one.text]
+        if named:
+            label = max(named, key=lambda window: len(window.label))
+            return label.value, label.label, f"as it is → × {short(changes[0].factor, 4)}"
     what = "; ".join(dict.fromkeys(change.label for change in changes))
     if one.kind is Kind.TOLERANCE:
         what = f"tolerance of {what.replace('tolerance of ', '')}"
-    return what, "; ".join(f"{change.before} → {change.after}" for change in changes)
+    value = changes[0].value if len(changes) == 1 else ""
+    return value, what, "; ".join(f"{change.before} → {change.after}" for change in changes)
 
 
 def _effect_text(effect: Effect | None) -> str:
@@ -258,10 +283,10 @@ def _in_full(effect: Effect) -> str:
     return f"{head}, mode {effect.nearest_mode} at {low} to {high} Hz, at worst {worst}"
 
 
-def _speed_line(one: BarredSpeeds, orders: int) -> OptionLine:
+def _speed_line(one: BarredSpeeds, empty: int) -> OptionLine:
     ranges = ", ".join(f"{short(low)} to {short(high)} rpm" for low, high in one.bar_rpm)
     left = ", ".join(f"{short(low)} to {short(high)}" for low, high in one.left_rpm)
-    cells = (f"barred speeds of {one.label}", f"none → {ranges}", "", *[""] * orders, f"left: {left} rpm")
+    cells = (f"barred speeds of {one.label}", f"bar {ranges}; left {left} rpm", "", *[""] * empty)
     return OptionLine(one.sentence, cells, one.sentence, one.edit, clears=False)
 
 
@@ -273,7 +298,7 @@ def _axis(one: ValueWindows, of: Mapping[str, Parameter], system: str) -> ValueA
     tolerance = (one.nominal, one.nominal)
     if first is not None and first.nominal:
         tolerance = (one.nominal * first.low / first.nominal, one.nominal * first.high / first.nominal)
-    now = one.text or (show(one.nominal, quantity, system) if quantity else "as it is")
+    now = one.text or (show(one.nominal, quantity, system) if quantity else "")
     return ValueAxis(
         value=one.value,
         label=one.label,

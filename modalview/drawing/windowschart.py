@@ -121,6 +121,17 @@ def _clear_box(x: float, y: float, width: float, height: float) -> tuple[Item, .
     return (Box(x, y, width, height, 0.0, Role.GOOD, Role.GOOD, 1.6, 0.25),)
 
 
+def _clear_bar(box: tuple[float, float, float, float], *, open_: tuple[bool, bool]) -> tuple[Item, ...]:
+    """Return a bar whose open ends have no line."""
+    x, y, width, height = box
+    edges = [[x, y, x + width, y], [x, y + height, x + width, y + height]]
+    edges += [[at, y, at, y + height] for at, free in zip((x, x + width), open_, strict=True) if not free]
+    return (
+        Box(x, y, width, height, 0.0, None, Role.GOOD, 0.0, 0.25),
+        Lines(np.array(edges), Role.GOOD, 1.6),
+    )
+
+
 def _shut_box(x: float, y: float, width: float, height: float) -> tuple[Item, ...]:
     return (
         Box(x, y, width, height, 0.0, None, Role.BAD, 0.0, 0.05),
@@ -141,7 +152,7 @@ def _bars(
             continue  # off the axis
         wide = max(right - left, 2.0)
         items.append(Box(left, top, wide, high, 0.0, None, Role.PAPER, 0.0))
-        items += _clear_box(left, top, wide, high)
+        items += _clear_bar((left, top, wide, high), open_=(one.low <= ends[0], one.high >= ends[1]))
     if _limited(content):
         edges = [x for x, end in zip((low_x, high_x), content.limits, strict=True) if 0 < end < math.inf]
         items.append(Lines(np.array([[x, top - 4.0, x, rows[1] + 4.0] for x in edges]), Role.INK, 1.8))
@@ -211,8 +222,7 @@ def _today(
     tip = np.array([[[x, top - 2.0], [x - 5.0, top - 10.0], [x + 5.0, top - 10.0]]])
     items.append(Polygons(tip, None, Role.ACCENT, 0.0))
     board.take(np.array([[x - 5.0, top - 10.0, x + 5.0, bottom]]))
-    said = f"{'clear' if content.clear_now else 'not clear'} at {content.now_text}"
-    label = (Line(said, Role.ACCENT, Size.SMALL, bold=True),)
+    label = (Line(content.today, Role.ACCENT, Size.SMALL, bold=True),)
     row = board.size(label)[1]
     spots = [Spot(x, top - 2.0 - row, side, -1) for side in (0, 1, -1)]
     return [*items, *board.place(label, spots)]

@@ -3,7 +3,7 @@
 from typing import Any
 
 from PySide6.QtCore import Qt, Signal
-from PySide6.QtGui import QKeyEvent
+from PySide6.QtGui import QKeyEvent, QShowEvent
 from PySide6.QtWidgets import QComboBox, QHBoxLayout, QLabel, QSizePolicy, QVBoxLayout, QWidget
 
 from modalview.ui.changestable import OptionsTable
@@ -149,6 +149,9 @@ class ChangesPage(ChartPage):
             self.said.hide()
             self.show_missing(NO_MACHINE)
             return
+        if self.inquiry.result is None and self.inquiry.busy:
+            self.show_missing("Looking for changes that clear it…")
+            return
         if self.told_of_none():
             return
         usable = self.inquiry.current
@@ -160,6 +163,11 @@ class ChangesPage(ChartPage):
             self.room.notes.setText("\n".join(content.notes))
         self._show_axis()
 
+    def showEvent(self, event: QShowEvent) -> None:  # noqa: N802  (Qt's name)
+        """Say that it is being looked for."""
+        super().showEvent(event)
+        self.show_result()
+
     def _offer_values(self, content: Any) -> None:
         """Offer the values by name; the one shown stays, else that of the first option is shown."""
         wanted = self.value.currentData()
@@ -169,7 +177,8 @@ class ChangesPage(ChartPage):
         kept = self.value.blockSignals(True)
         self.value.clear()
         for one in content.values:
-            self.value.addItem(f"{one.label} ({one.now_text}){_sign(one)}", one.value)
+            now = f" ({one.now_text})" if one.now_text else ""
+            self.value.addItem(f"{one.label}{now}{_sign(one)}", one.value)
         self.value.setCurrentIndex(max(self.value.findData(wanted), 0))
         self.value.blockSignals(kept)
 
@@ -191,7 +200,8 @@ class ChangesPage(ChartPage):
 
     def sentence(self) -> str:
         """Say how to read the axis."""
-        return "Move over the axis to read it · Enter in a line tries its option"
+        told = "Move over the axis to read it"
+        return f"{told} · Enter in a line tries its option" if self.options.rowCount() else told
 
     def _on_tried(self, row: int) -> None:
         option = self._shown.options[row]
@@ -212,6 +222,6 @@ def _in_words(axis: Any) -> str:
 def _windows_in_words(axis: Any) -> str:
     """Say what the axis shows, for those who hear the window."""
     if not axis.windows:
-        return f"{axis.label}, now {axis.now_text}: no value of it alone clears every check"
+        return f"{axis.label}, {axis.today}: no value of it alone clears every check"
     found = "; ".join(f"{one.low_text or 'nothing'} to {one.high_text or 'any'}" for one in axis.windows)
-    return f"{axis.label}, now {axis.now_text}: every check is clear from {found}"
+    return f"{axis.label}, {axis.today}: every check is clear from {found}"

@@ -10,6 +10,8 @@ from PySide6.QtWidgets import QHeaderView, QPushButton, QWidget
 
 from modalview.ui.figuretable import FigureTable
 
+WIDEST = 15.0  # of a column, in heights of a line
+
 
 class OptionsTable(FigureTable):
     """Enter, a double click or the button of a line tries its option."""
@@ -49,6 +51,8 @@ class OptionsTable(FigureTable):
             self.setFixedHeight(self.height_of(line))
             self.horizontalHeader().setSectionResizeMode(0, QHeaderView.ResizeMode.Fixed)
             self.setColumnWidth(0, self.button_width())
+            # Longer texts are cut; the tool tip of the line tells all.
+            self.horizontalHeader().setMaximumSectionSize(round(WIDEST * self.fontMetrics().height()))
 
     def height_of(self, line: int) -> int:
         """Return the height of all rows, pixels."""

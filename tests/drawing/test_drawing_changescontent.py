@@ -12,6 +12,7 @@ from modalview.study.remedies import RemediesRequest, remedies
 
 PUMP = demo_models() / "1-cooling-water-pump" / "as-built.keepclear"
 CLEAR = PUMP.with_name("part-grout-and-anchors.keepclear")
+GENERATOR = demo_models() / "4-standby-generator-set" / "dynamic-stiffness.keepclear"
 SPRINGS = demo_models() / "2-supply-fan" / "steel-springs.keepclear"
 RETROFIT = demo_models() / "6-vacuum-pump-absorber" / "no-absorber.keepclear"
 
@@ -40,7 +41,7 @@ def test_options_say_what_from_to_and_every_order(pump):
     assert first["from → to"].startswith("175 kN/mm → 30")
     assert first["1× unbalance"].startswith("clear +15")
     assert first["room left"] == "0.0 %"
-    assert "settles" in first["cost elsewhere"]
+    assert " um → " in first["most that a body settles under the weight at rest"]
     assert pump.options[0].value == "k3.stiffness"
 
 
@@ -62,5 +63,20 @@ def test_absorber_and_barred_speeds_are_lines_too():
     (absorber,) = [one for one in content_of(RETROFIT).options if "absorber" in one.text]
     assert absorber.cells[1] == "210 kg, 3.21 kN/mm"
     (speeds,) = [one for one in content_of(SPRINGS).options if not one.clears]
-    assert speeds.cells[:2] == ("barred speeds of supply fan SF-2", "none → 676 to 1376 rpm")
+    assert speeds.cells[0] == "barred speeds of supply fan SF-2"
+    assert speeds.cells[1] == "bar 676 to 1376 rpm; left 600 to 676, 1376 to 1800 rpm"
     assert speeds.edit is not None
+
+
+def test_several_by_one_factor_are_named_as_one():
+    request = Request(read_model(GENERATOR))
+    outlook = look(request)
+    found = changes(ChangesRequest(request, values=("set.mass+set.inertia",)))
+    others = remedies(RemediesRequest(request, geometry=False))
+    content = changes_content(outlook, found, others, outlook.assembly.parameters)
+    (axis,) = content.values
+    assert axis.today == "not clear as it is"
+    first = content.options[0]
+    assert first.cells[0] == "mass and inertia of engine and alternator"
+    assert first.cells[1].startswith("as it is → × 1.7")
+    assert first.value == axis.value

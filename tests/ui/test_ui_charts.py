@@ -400,7 +400,7 @@ def test_a_page_that_goes_with_another_model_leaves_the_modes_in_sight(window, q
 # What they share
 
 
-@pytest.mark.parametrize("name", ["response", "speeds", "mounts"])
+@pytest.mark.parametrize("name", ["changes", "response", "speeds", "mounts"])
 def test_each_page_is_reached_by_the_menu_and_speaks(pump, qtbot, name):
     pump.menus.actions[f"on_go_to_{name}"].trigger()
     page = pump.charts.pages[name]
