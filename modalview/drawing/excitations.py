@@ -35,6 +35,8 @@ class Push:
     texts : tuple of str
     spots : tuple of Spot
         Where the texts may stand, best first.
+    near : int
+        How many of the spots are by the arrow itself; the others are about the body.
     """
 
     body: int
@@ -43,6 +45,7 @@ class Push:
     box: Floats
     texts: tuple[str, ...]
     spots: tuple[Spot, ...]
+    near: int
 
 
 def lines_above(model: Model) -> int:
@@ -127,6 +130,7 @@ def _push(geometry: SheetGeometry, body: int, arm: Floats, way: str | Floats, te
         np.array([[*ends.min(axis=0), *ends.max(axis=0)]]),
         texts,
         tuple(spots),
+        len(spots) - len(around),
     )
 
 

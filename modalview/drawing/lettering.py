@@ -258,6 +258,10 @@ def _name_pushes(
         heads = tuple(Line(name, Role.WARN, Size.SMALL) for name in names)
         placed: list[Text] = []
         still, sway = (0.0, 0.0), _sway(geometry)
+        # The text moves with its arrow: by it, the two cannot meet however little room is kept.
+        by_arrow = replace(push, spots=push.spots[: push.near])
+        for some, room in ((lines, sway), (lines, still)):
+            placed = placed or _by_push(geometry, by_arrow, boards, some, _Room(room, False, owner))
         for some, room, far in (
             (lines, sway, False),
             (small, sway, False),

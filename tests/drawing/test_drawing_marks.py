@@ -10,7 +10,9 @@ from modalview.drawing.motion import frame, pose
 from modalview.drawing.primitives import Lines, Text
 from modalview.drawing.sheet import sheet_drawing, sheet_geometry
 from modalview.drawing.symbols import bent
-from modalview.model.parts import Drawn, Model
+from modalview.model.adding import add_body
+from modalview.model.adding_machines import add_excitation, add_machine
+from modalview.model.parts import Drawn, End, Model, Motion
 
 
 def test_pitch_circles_roll_without_slip():
@@ -118,3 +120,16 @@ def test_a_long_title_stands_in_two_lines_before_it_is_cut(tower_model: Model):
     texts = [item.text for item in items if isinstance(item, Text)]
     assert not any("…" in text for text in texts)
     assert any(text.endswith("its mounts") for text in texts)
+
+
+def test_the_text_of_a_straight_arrow_stands_by_it_rather_than_across_its_body():
+    model = Model(motion=Motion.PLANE)
+    model, fan = add_body(model, "body", (0.0, 1.0), (2.0, 0.7))
+    model, machine = add_machine(model, "fan", "900 rpm", "20 %")
+    model, _ = add_excitation(model, machine, "1", at=End(body=fan), direction="y", name="unbalance")
+    geometry = sheet_geometry(model, 595, 435)
+    text = next(text for _, text in geometry.body_labels if text.text == "1× unbalance")
+    ((_, segments),) = geometry.body_arrows
+    low, high = segments.reshape(-1, 2).min(axis=0), segments.reshape(-1, 2).max(axis=0)
+    assert low[1] - 24.0 < text.y < high[1] + 8.0
+    assert low[0] - 24.0 < text.x < high[0] + 24.0

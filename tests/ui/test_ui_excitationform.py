@@ -8,7 +8,7 @@ from PySide6.QtTest import QTest
 from PySide6.QtWidgets import QComboBox, QLineEdit, QPushButton, QToolButton, QWidget
 
 from modalview.model.adding import add_body
-from modalview.model.parts import Model, Motion
+from modalview.model.parts import End, Model, Motion
 from modalview.model.rules import faults
 from modalview.places import demo_models
 from modalview.ui.document import Document
@@ -133,6 +133,15 @@ def test_a_margin_out_of_range_is_refused_before_the_next_line_is_reached(sheet,
     by_keyboard(sheet, "fan", "900 rpm", "20")
     assert sheet.window().focusWidget() is form.row("margin").value
     assert 'which is 2000 %; write "20 %"' in form.row("margin").reason.text()
+
+
+def test_along_one_axis_it_is_the_body_on_which_something_acts_wherever_it_was_clicked(document, form):
+    document.model = Model(motion=Motion.SINGLE_AXIS)
+    document.model, _ = add_body(document.model, "mass", (0.0, 1.0))
+    form.show_at("m1", (0.1, 1.1), BESIDE)
+    fill(form, machine_name="pump", speed="2950 rpm", margin="15 %", rate="1")
+    form.add_button.click()
+    assert document.model.machines[0].excitations[0].at == End(body="m1")
 
 
 def test_an_existing_machine_is_offered_and_asked_nothing_again(document, form):

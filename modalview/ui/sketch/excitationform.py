@@ -151,7 +151,9 @@ class ExcitationForm(FloatingForm):
             In which values are converted.
         """
         model = self._document.model
-        self._at, self._system = end_at(model, body, place), system
+        # Along one axis it is all the same where on a body something acts.
+        there = End(body=body) if model.motion is Motion.SINGLE_AXIS else end_at(model, body, place)
+        self._at, self._system = there, system
         called = dict(bodies_of(model))[body]
         self.title.setText(f"what acts on {called}")
         known = [one.id for one in model.machines]
