@@ -140,6 +140,21 @@ class Stack:
         found[:, : self.rigid_body] = 0.0
         return found
 
+    def modes_at(self, values: Array) -> tuple[Array, Array]:
+        """Return eigenvalues (s, modes) and M-orthonormal shapes (s, n, modes) at values (s, parameters).
+
+        For models without massless coordinates; as accurate as ``eigenvalues``.
+        """
+        if self.massless.any():
+            raise InputError("Shapes of a stack are found for models without massless coordinates.")
+        eigenvalues, vectors = np.linalg.eigh(self._standard(values))
+        np.maximum(eigenvalues, 0.0, out=eigenvalues)
+        eigenvalues[:, : self.rigid_body] = 0.0
+        if self.mass.diagonal:
+            return eigenvalues, vectors / np.sqrt(self.mass.diagonals_at(values))[:, :, None]
+        lower = np.linalg.cholesky(self.mass.at(values))
+        return eigenvalues, np.asarray(np.linalg.solve(lower.transpose(0, 2, 1), vectors))
+
     def _standard(self, values: Array) -> Array:
         K = self.stiffness.at(values)
         if self.massless.any() or not self.mass.diagonal:

@@ -8,6 +8,7 @@ import numpy.typing as npt
 
 from modalview.assembly.assemble import Assembly
 from modalview.errors import Fault, InputError, ModelFaultsError
+from modalview.model.parts import Machine
 from modalview.response.dynamic import Dynamics
 from modalview.response.load import Push, push_of
 from modalview.response.strength import running_speeds, strength
@@ -47,7 +48,7 @@ def watchings(assembly: Assembly) -> tuple[Watching, ...]:
     found = []
     reasons: list[Fault] = []
     for machine in model.machines:
-        if running_speeds(machine) is None or not _pushes(dynamics, machine.id, reasons):
+        if running_speeds(machine) is None or not pushes_of(dynamics, machine, reasons):
             continue
         points, _, _ = watched_points(ResponseRequest(model), assembly, dynamics.terms, machine)
         found += [Watching(machine.id, one.watch.label, one.watch) for one in points]
@@ -58,8 +59,8 @@ def watchings(assembly: Assembly) -> tuple[Watching, ...]:
     return tuple(found)
 
 
-def _pushes(dynamics: Dynamics, machine_id: str, reasons: list[Fault]) -> list[Push]:
-    machine = next(one for one in dynamics.assembly.model.machines if one.id == machine_id)
+def pushes_of(dynamics: Dynamics, machine: Machine, reasons: list[Fault]) -> list[Push]:
+    """Return what pushes of a machine; why others cannot be computed is added to ``reasons``."""
     found: list[Push] = []
     for excitation in machine.excitations:
         try:
@@ -88,7 +89,7 @@ def amplitudes_at(assembly: Assembly, watching: Sequence[Watching]) -> list[floa
             continue
         request = ResponseRequest(assembly.model, watches=tuple(one.watch for one in own))
         points, _, _ = watched_points(request, assembly, dynamics.terms, machine)
-        sweeper = Sweeper(dynamics, _pushes(dynamics, machine.id, []), points[: len(own)], _never)
+        sweeper = Sweeper(dynamics, pushes_of(dynamics, machine, []), points[: len(own)], _never)
         rows = _rows(sweeper, speeds)
         found |= {one: float(rows[i, -1, VELOCITY].max()) for i, one in enumerate(own)}
     return [found[one] for one in watching]

@@ -14,11 +14,13 @@ from modalview.assembly.parameters import Case, values_at
 from modalview.eigen.solve import find_modes
 from modalview.eigen.stacked import Stack
 from modalview.errors import InputError
+from modalview.model.parts import SpeedRange
 from modalview.resonance.bands import bands
 from modalview.resonance.results import Band
 from modalview.study.amplitudes import Watching, amplitudes_at, watchings
 from modalview.study.chunks import Errand, in_chunks
 from modalview.study.look import RAD_PER_HZ
+from modalview.study.stacked_motion import StackedMotion, stacked_motion
 from modalview.study.vary import ranged, small_assembly
 from modalview.study.vary_results import (
     SPREADS,
@@ -33,7 +35,7 @@ Array = npt.NDArray[np.float64]
 
 MOST_SAMPLES = 10_000_000
 # Samples of one chunk: enough that sending it costs little, few enough that it can be stopped soon.
-CHUNK, FEW = 10_000, 50
+CHUNK, MOVING, FEW = 10_000, 1_000, 50
 
 
 @dataclass(frozen=True, slots=True, eq=False)
@@ -68,17 +70,18 @@ class Spread:
 
 @dataclass(frozen=True, slots=True, eq=False)
 class StackTask:
-    """Samples of one structure: only frequencies are wanted, and only sizes of values vary."""
+    """Samples of one structure: only sizes of values vary."""
 
     stack: Stack
     spread: Spread
     seed: np.random.SeedSequence
     count: int
+    motion: StackedMotion | None = None
 
 
 @dataclass(frozen=True, slots=True, eq=False)
 class EachTask:
-    """Samples that are assembled one by one: coordinates vary, or the motion is wanted."""
+    """Samples that are assembled one by one: coordinates vary, or only so the motion can be found."""
 
     assembly: Assembly
     geometry: tuple[Chosen, ...]
@@ -102,7 +105,10 @@ class Drawn:
 def stacked(task: StackTask) -> Drawn:
     """Find all frequencies of a chunk at once; pure, and sent to any worker."""
     values = task.spread.draw(np.random.default_rng(task.seed), task.count)
-    return Drawn(task.stack.eigenvalues(values), np.zeros((task.count, 0)))
+    if task.motion is None:
+        return Drawn(task.stack.eigenvalues(values), np.zeros((task.count, 0)))
+    eigenvalues, shapes = task.stack.modes_at(values)
+    return Drawn(eigenvalues, task.motion.at(eigenvalues, shapes))
 
 
 def one_by_one(task: EachTask) -> Drawn:
@@ -156,14 +162,17 @@ def sample(request: SampleRequest) -> Samples:
     spread = _spread(request, assembly, chosen)
     watching = watchings(assembly) if request.response else ()
     errand = Errand("random samples", request.cancelled, request.progress, request.executor)
-    cut = _cut(request, FEW if geometry or watching else CHUNK)
-    if geometry or watching:
+    motion = stacked_motion(assembly, watching) if watching else None
+    size = FEW if geometry or (watching and motion is None) else MOVING if watching else CHUNK
+    cut = _cut(request, size)
+    if size == FEW:
         each = [EachTask(assembly, geometry, spread, seed, count, watching) for seed, count in cut]
         found = in_chunks(errand, one_by_one, each)
     else:
         stack = Stack.of(assembly)
-        found = in_chunks(errand, stacked, [StackTask(stack, spread, seed, count) for seed, count in cut])
-    return _gathered(request, assembly, (chosen, spread, watching), found, start)
+        tasks = [StackTask(stack, spread, seed, count, motion) for seed, count in cut]
+        found = in_chunks(errand, stacked, tasks)
+    return _gathered(request, assembly, (chosen, spread, watching, size), found, start)
 
 
 def _cut(request: SampleRequest, size: int) -> list[tuple[np.random.SeedSequence, int]]:
@@ -198,16 +207,15 @@ def _spread(request: SampleRequest, assembly: Assembly, chosen: Sequence[Chosen]
 def _gathered(
     request: SampleRequest,
     assembly: Assembly,
-    given: tuple[Sequence[Chosen], Spread, Sequence[Watching]],
+    given: tuple[Sequence[Chosen], Spread, Sequence[Watching], int],
     found: Sequence[Drawn],
     start: float,
 ) -> Samples:
-    chosen, spread, watching = given
+    chosen, spread, watching, size = given
     geometry = [one for one in chosen if one.family == GEOMETRY]
     names = [(one.id, f"{one.label} {one.id[len(one.part) + 1 :]}") for one in assembly.parameters]
     names += [(one.name, one.label) for one in geometry]
     free = np.flatnonzero(spread.low < spread.high)
-    size = FEW if geometry or watching else CHUNK
     frequencies = np.sqrt(np.concatenate([one.eigenvalues for one in found])) / RAD_PER_HZ
     motion = np.concatenate([one.motion for one in found])
     nominal = Stack.of(assembly).eigenvalues(values_at(assembly.parameters, Case.NOMINAL)[None])[0]
@@ -278,6 +286,8 @@ def _notes(request: SampleRequest, assembly: Assembly, geometry: Sequence[Chosen
     said = [often]
     if geometry:
         said.append("Coordinates vary: the two cases do not cover them, so that no range is proven here.")
+    if request.response and any(isinstance(one.speed, SpeedRange) for one in request.model.machines):
+        said.append("Peaks within a range of speeds are as high as told to about the damping ratio squared.")
     if request.response and any(one.family == "damping" and one.exact for one in assembly.parameters):
         said.append("Dashpots without a tolerance are taken as exact; a damping ratio always is.")
     exact = [one for one in assembly.matter if one.exact]

@@ -24,6 +24,17 @@ def test_cases_of_the_demonstration_models(path):
         assert row == pytest.approx(alone, rel=1e-11, abs=1e-14 * alone[-1])
 
 
+@pytest.mark.parametrize("path", DEMOS, ids=lambda path: path.stem)
+def test_shapes_are_orthonormal_to_the_mass(path):
+    assembly = assemble(read_model(path))
+    values = np.array([values_at(assembly.parameters, case) for case in Case])
+    eigenvalues, shapes = Stack.of(assembly).modes_at(values)
+    for row, columns, case in zip(eigenvalues, shapes, Case, strict=True):
+        pencil = assembly.pencil(case)
+        assert columns.T @ (pencil.M @ columns) == pytest.approx(np.eye(row.size), abs=1e-12)
+        assert columns.T @ (pencil.K @ columns) == pytest.approx(np.diag(row), abs=1e-12 * row[-1])
+
+
 def test_rigid_body_modes_are_exactly_zero():
     train = read_model(demo_models() / "3-air-compressor-train" / "as-built.keepclear")
     assembly = assemble(train)

@@ -8,13 +8,16 @@ import numpy as np
 import pytest
 from measured_models import HZ, line, oscillators, spring
 
+from modalview.assembly.assemble import assemble
 from modalview.errors import CancelledError, InputError, ModelFaultsError
 from modalview.places import demo_models
 from modalview.store import read_model
 from modalview.study import Request, solve
+from modalview.study.amplitudes import amplitudes_at, watchings
 from modalview.study.response import respond
 from modalview.study.response_results import ResponseRequest
 from modalview.study.sampling import Spread, sample
+from modalview.study.stacked_motion import stacked_motion
 from modalview.study.vary_results import SampleRequest
 
 DEMOS = sorted(demo_models().glob("*/*.keepclear"))
@@ -145,6 +148,37 @@ def test_motion_at_a_sample_is_that_of_the_model_with_these_values():
     """The damping of a dashpot varies, too, where the motion is wanted."""
     drawn = sample(SampleRequest(BEAM, samples=2, response=True))
     assert np.ptp(drawn.amplitudes[0].sampled) > 0
+
+
+@pytest.mark.parametrize(
+    ("path", "off"),
+    [
+        ("1-cooling-water-pump/as-built", 1e-12),
+        ("3-air-compressor-train/as-built", 1e-12),
+        ("4-standby-generator-set/raised-mounts", 1e-12),
+        ("2-supply-fan/steel-legs", 3e-3),  # a range of speeds: its peaks to about the damping ratio squared
+        ("5-raw-water-vertical-pump/after-bump-test", 3e-3),
+    ],
+)
+def test_motion_of_a_stack_is_that_of_each_model_alone(path, off):
+    model = read_model(demo_models() / f"{path}.keepclear")
+    drawn = sample(SampleRequest(model, samples=3, response=True))
+    assembly = assemble(model)
+    watching = watchings(assembly)
+    assert stacked_motion(assembly, watching) is not None
+    index = [one.id for one in assembly.parameters]
+    for number, sizes in enumerate(zip(*(one.sampled for one in drawn.amplitudes), strict=True)):
+        values = [one.nominal for one in assembly.parameters]
+        for (name, _), si in zip(drawn.drawn, drawn.values[number], strict=True):
+            values[index.index(name)] = float(si)
+        moved = (replace(one, nominal=si) for one, si in zip(assembly.parameters, values, strict=True))
+        alone = amplitudes_at(replace(assembly, parameters=tuple(moved)), watching)
+        assert list(sizes) == pytest.approx(alone, rel=off)
+
+
+def test_motion_with_dashpots_is_found_one_by_one():
+    assembly = assemble(BEAM)
+    assert stacked_motion(assembly, watchings(assembly)) is None
 
 
 def test_motion_needs_an_excitation_of_known_size():
