@@ -31,6 +31,7 @@ QUANTITIES = {
 }
 VERDICTS = {Verdict.CLEAR: "clear", Verdict.NOMINAL_ONLY: "nominal only", Verdict.IN_BAND: "in band"}
 ORDERS = 6  # columns of orders; of more, those with the least room
+LISTED = 3  # values of one option, one below the other
 WHAT, CHANGE, ROOM = "what", "from → to", "room left"
 ROOM_TIP = "Worst separation over all tolerances and load cases, less the margin wanted on that side"
 
@@ -260,11 +261,23 @@ def _what(one: Option, windows: Sequence[ValueWindows]) -> tuple[str, str, str]:
         if named:
             label = max(named, key=lambda window: len(window.label))
             return label.value, label.label, f"as it is → × {short(changes[0].factor, 4)}"
-    what = "; ".join(dict.fromkeys(change.label for change in changes))
+    labels = [change.label for change in changes]
     if one.kind is Kind.TOLERANCE:
-        what = f"tolerance of {what.replace('tolerance of ', '')}"
+        labels = [f"tolerance of {label.removeprefix('tolerance of ')}" for label in labels]
     value = changes[0].value if len(changes) == 1 else ""
-    return value, what, "; ".join(f"{change.before} → {change.after}" for change in changes)
+    texts = [f"{change.before} → {change.after}" for change in changes]
+    return value, _listed(labels), _listed(texts)
+
+
+def _listed(texts: Sequence[str]) -> str:
+    r"""Return texts one below the other; of many the first two.
+
+    >>> _listed(["a", "b", "c", "d"])
+    'a\nb\nand 2 more'
+    """
+    if len(texts) <= LISTED:
+        return "\n".join(texts)
+    return "\n".join([*texts[: LISTED - 1], f"and {len(texts) - LISTED + 1} more"])
 
 
 def _effect_text(effect: Effect | None) -> str:

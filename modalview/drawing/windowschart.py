@@ -12,6 +12,7 @@ from modalview.drawing.labels import Board, Line, Spot
 from modalview.drawing.primitives import Anchor, Box, Drawing, Item, Lines, Polygons, Role, Size, Text
 from modalview.drawing.symbols import hatched
 from modalview.drawing.textsize import line_height, text_width
+from modalview.units.show import short
 
 BEYOND = 2.0  # the axis goes on by this factor beyond all it shows
 FARTHEST = 1e3  # ends of windows farther from today's value than this factor are off the axis
@@ -67,7 +68,7 @@ def windows_chart(
     """
     step = line_height(Size.SMALL, text_scale=text_scale)
     legend, reached = flowing(_legend(content), width, 4.0 + step / 2, text_scale)
-    top = reached + 3.3 * step
+    top = reached + 3.5 * step
     bottom = max(height - 2.0 * step, top + 0.8 * step)
     rows = (top, min(bottom, top + 2.6 * step))
     ends, pixels = axis_ends(content), (_EDGE, max(width - _EDGE, _EDGE + 40.0))
@@ -224,7 +225,7 @@ def _today(
     board.take(np.array([[x - 5.0, top - 10.0, x + 5.0, bottom]]))
     label = (Line(content.today, Role.ACCENT, Size.SMALL, bold=True),)
     row = board.size(label)[1]
-    spots = [Spot(x, top - 2.0 - row, side, -1) for side in (0, 1, -1)]
+    spots = [Spot(x, top - 5.0 - row, side, -1) for side in (0, 1, -1)]
     return [*items, *board.place(label, spots)]
 
 
@@ -235,16 +236,17 @@ def _names(
     rows: tuple[float, float],
     board: Board,
 ) -> list[Item]:
-    """Write the ends of the windows above them where there is room."""
+    """Write the ends of the windows above them where there is room, in the unit of the axis."""
     items: list[Item] = []
     y = rows[0] - 2.0
     for one in content.windows:
-        for end, text, side in ((one.low, one.low_text, 1), (one.high, one.high_text, -1)):
-            if text and ends[0] < end < ends[1]:
+        for end, side in ((one.low, -1), (one.high, 1)):
+            if ends[0] < end < ends[1]:
                 x = _x_of(end, ends, pixels)
-                spots = [Spot(x, y, side, -1), Spot(x, y, 0, -1), Spot(x, y, -side, -1)]
-                spots += [Spot(x, y - board.size((Line(text, size=Size.SMALL),))[1], 0, -1)]
-                items += board.place((Line(text, Role.GOOD, Size.SMALL),), spots)
+                label = (Line(short(end / content.per, 4), Role.GOOD, Size.SMALL),)
+                spots = [Spot(x, y, right, -1) for right in (0, side, -side)]
+                spots += [Spot(x, y - board.size(label)[1], right, -1) for right in (0, side, -side)]
+                items += board.place(label, spots)
     return items
 
 

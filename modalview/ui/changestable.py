@@ -10,7 +10,8 @@ from PySide6.QtWidgets import QHeaderView, QPushButton, QWidget
 
 from modalview.ui.figuretable import FigureTable
 
-WIDEST = 15.0  # of a column, in heights of a line
+# Of a column, and of a row of one line, in heights of a line.
+WIDEST, HIGH = 15.0, 1.9
 
 
 class OptionsTable(FigureTable):
@@ -45,19 +46,24 @@ class OptionsTable(FigureTable):
     def fit(self) -> None:
         """Be as high as the rows, with room for the buttons."""
         super().fit()
-        line = round(1.9 * self.fontMetrics().height())
-        if self.rowCount():
-            self.verticalHeader().setDefaultSectionSize(line)
-            self.setFixedHeight(self.height_of(line))
-            self.horizontalHeader().setSectionResizeMode(0, QHeaderView.ResizeMode.Fixed)
-            self.setColumnWidth(0, self.button_width())
-            # Longer texts are cut; the tool tip of the line tells all.
-            self.horizontalHeader().setMaximumSectionSize(round(WIDEST * self.fontMetrics().height()))
-
-    def height_of(self, line: int) -> int:
-        """Return the height of all rows, pixels."""
+        if not self.rowCount():
+            return
+        text = self.fontMetrics().height()
+        for row in range(self.rowCount()):
+            self.setRowHeight(row, round((HIGH + self._lines(row) - 1) * text))
         bar = self.horizontalScrollBar().sizeHint().height()
-        return self.horizontalHeader().sizeHint().height() + line * self.rowCount() + bar + 4
+        self.setFixedHeight(self.horizontalHeader().sizeHint().height() + self.rows_height() + bar + 4)
+        self.horizontalHeader().setSectionResizeMode(0, QHeaderView.ResizeMode.Fixed)
+        self.setColumnWidth(0, self.button_width())
+        # Longer texts are cut; the tool tip of the line tells all.
+        self.horizontalHeader().setMaximumSectionSize(round(WIDEST * text))
+
+    def _lines(self, row: int) -> int:
+        return 1 + max(self._text(row, column).count("\n") for column in range(self.columnCount()))
+
+    def rows_height(self) -> int:
+        """Return the height of all rows, pixels."""
+        return sum(self.rowHeight(row) for row in range(self.rowCount()))
 
     def button_width(self) -> int:
         """Return the width that the buttons need, pixels."""
