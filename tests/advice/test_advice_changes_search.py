@@ -73,9 +73,16 @@ def test_what_no_spring_may_do_is_proven_to_exist_nowhere(parallel):
 
 
 def test_a_search_cut_short_says_none_found(parallel):
-    found = least(parallel(), most_boxes=1)
+    found = least(parallel(), most_boxes=0)
     assert found.status is Found.NONE_FOUND
     assert "no proof" in found.sentence
+
+
+def test_a_search_cut_short_does_not_call_what_it_found_the_least(parallel):
+    found = least(parallel(), most_boxes=1)
+    assert found.status is Found.FOUND
+    assert found.least < found.amount
+    assert "perhaps not the least" in found.sentence
 
 
 def test_a_search_can_be_stopped_and_tells_how_far_it_is(parallel):

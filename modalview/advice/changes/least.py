@@ -13,6 +13,7 @@ from modalview.advice.changes.results import Found
 from modalview.errors import CancelledError
 
 Array = npt.NDArray[np.float64]
+Bools = npt.NDArray[np.bool_]
 
 # Without limits of the user's a value is looked for within a hundredth and a hundred times today's.
 WIDEST = 100.0
@@ -20,6 +21,8 @@ WIDEST = 100.0
 MOST_PROVEN = 4
 # The change found is the least to this much of ln factor: 0.05 % of a value.
 ENOUGH = 5e-4
+# A change smaller than this in ln factor is tried without.
+SMALL = 5e-3
 # Boxes narrower than this in ln factor are not cut further: rounding decides there.
 NARROWEST = 1e-7
 # So many boxes are looked at, and so many at once.
@@ -149,17 +152,26 @@ class _Tree:
 
     def _look_at(self, batch: Array) -> None:
         near = np.clip(0.0, batch[:, :, 0], batch[:, :, 1])
-        clear = self.landscape.clear(np.exp(near))
-        for point in near[clear]:
-            cost = float(self._cost(point))
-            if cost < self.best:
-                self.best, self.point = cost, point
+        clear = self._try(near)
         rest = batch[~clear]
         if not len(rest):
             return
         gates = self.landscape.hopeless(np.exp(rest[:, :, 0]), np.exp(rest[:, :, 1]))
         self.dropped += [(int(gate), box) for gate, box in zip(gates, rest, strict=True) if gate != OPEN]
-        self._cut(rest[gates == OPEN])
+        rest = rest[gates == OPEN]
+        # The dear ends of boxes that still matter are mostly clear: they close the gap from above.
+        far = np.where(np.abs(rest[:, :, 0]) > np.abs(rest[:, :, 1]), rest[:, :, 0], rest[:, :, 1])
+        self._try(far[self._cost(far) < self.best])
+        self._cut(rest)
+
+    def _try(self, points: Array) -> Bools:
+        """Return which points are clear, and keep the cheapest."""
+        clear = self.landscape.clear(np.exp(points)) if len(points) else np.zeros(0, dtype=bool)
+        for point in points[clear]:
+            cost = float(self._cost(point))
+            if cost < self.best:
+                self.best, self.point = cost, point
+        return clear
 
     def _cut(self, boxes: Array) -> None:
         width = boxes[:, :, 1] - boxes[:, :, 0]
@@ -217,7 +229,7 @@ class _Tree:
 def rounded_points(
     factors: Array, spelled: Sequence[Callable[[float, int, int], float]], digits: int
 ) -> Array:
-    """Return the points (2**changed, variables) around one whose values have so many digits.
+    """Return the points (m, variables) around one whose values have so many digits, or stay as they are.
 
     Parameters
     ----------
@@ -227,8 +239,12 @@ def rounded_points(
     digits : int
     """
     ways = [
-        [factor] if factor == 1.0 else sorted({spell(factor, digits, side) for side in (-1, 1)})
+        sorted({*(spell(factor, digits, side) for side in (-1, 1)), *([1.0] if _is_small(factor) else [])})
         for factor, spell in zip(factors.tolist(), spelled, strict=True)
     ]
     grid = np.meshgrid(*ways, indexing="ij")
     return np.stack([axis.ravel() for axis in grid], axis=1)
+
+
+def _is_small(factor: float) -> bool:
+    return abs(math.log(factor)) < SMALL

@@ -77,7 +77,7 @@ def _proven(base: Base, scene: Landscape, least: Least, search: Search) -> Optio
             if digits < DIGITS[-1]:
                 fit &= costs <= least.amount * (1 + DEARER) + BESIDES
             within = _within(points, least)
-            for number in np.argsort(costs):
+            for number in np.lexsort((costs, (points != 1.0).sum(axis=1))):
                 if not (fit[number] and within[number]):
                     continue
                 model, changes = writer.changed(scene.variables, points[number].tolist(), digits)
@@ -113,7 +113,13 @@ def _sentence(
     if status is Found.CLEAR_NOW:
         return "Everything is clear as it is."
     if option is not None:
-        return f"{option.text}: the least change of {_names(variables)} that clears everything."
+        if option.amount <= least.bound * (1 + DEARER) + 2 * BESIDES:
+            return f"{option.text}: the least change of {_names(variables)} that clears everything."
+        share = short(100 * least.bound / option.amount, 2)
+        return (
+            f"{option.text}: a change of {_names(variables)} that clears everything, perhaps not the least; "
+            f"none below {share} % of it exists."
+        )
     writer = Writer.of(base.states[0].assembly, base.model)
     spans = ", ".join(
         f"{one.label} from {writer.text(one, low * writer.nominal(one), 3)} "

@@ -22,8 +22,9 @@ DIGITS = (4, 5, 6, 7)
 KEPT = 0.95
 # The last digit steps inward so often where rounding leaves the count at an end open.
 STEPS = 3
-# An open end is proven so far beyond the other end, and beyond today's value.
-FAR = 1e4
+# An open end is proven so far beyond the other end, and beyond today's value; nearer where a mass all but
+# gone, or a stiffness all but rigid, leaves counts undecided.
+FAR = (1e4, 30.0)
 YOUR_LIMIT = "your limit"
 # No model has a value beyond these factors of today's.
 SMALLEST, LARGEST = 1e-9, 1e9
@@ -167,7 +168,7 @@ def _window(
     gates: Sequence[Gate], variable: Variable, span: Span, shown: Shown, *, prove: bool
 ) -> Window | None:
     """Return a span with few digits, more where it is narrow or where counts leave an end open."""
-    last = None
+    last = first = None
     for digits in DIGITS:
         for inward in range(STEPS):
             last = _rounded(span, shown, digits, inward) or last
@@ -175,9 +176,10 @@ def _window(
                 break
             if not prove:
                 return last
+            first = first or last
             if proves(gates, variable, last.low / shown.nominal, last.high / shown.nominal):
                 return replace(last, proven=True)
-    return last
+    return first or last
 
 
 def _keeps(window: Window) -> bool:
@@ -211,11 +213,16 @@ def proves(gates: Sequence[Gate], variable: Variable, low: float, high: float) -
     -----
     Ordered frequencies move one way with the factor (Courant-Fischer): with as many modes up to the band at
     the softest end, soft-heavy, as below it at the stiffest end, stiff-light, none lies in it anywhere
-    between. An open end is counted at ``FAR`` times the other one.
+    between. An open end is counted at the first of ``FAR`` times the other one, or today's value, at which
+    rounding leaves counts decided; beyond it no crossing is left.
     """
-    bottom = low if low > 0 else min(high, 1.0) / FAR
-    top = high if high < math.inf else max(low, 1.0) * FAR
-    return clear_between(gates, {variable.id: variable}, {variable.id: bottom}, {variable.id: top})
+    name, both = {variable.id: variable}, low > 0 and high < math.inf
+    for far in FAR[:1] if both else FAR:
+        bottom = low if low > 0 else min(high, 1.0) / far
+        top = high if high < math.inf else max(low, 1.0) * far
+        if clear_between(gates, name, {variable.id: bottom}, {variable.id: top}):
+            return True
+    return False
 
 
 def clear_between(
