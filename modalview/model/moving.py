@@ -200,6 +200,43 @@ def reattached(model: Model, link_id: str, side: str, end: End) -> Model:
     return replace(model, links=(*model.links[:number], new, *model.links[number + 1 :]))
 
 
+def slid(model: Model, ids: Collection[str], step: Sequence[float]) -> Model:
+    """Return the model with links moved along, on the bodies that they join.
+
+    Parameters
+    ----------
+    ids : collection of str
+        Links; other ids stand for nothing here.
+    step : sequence of float
+        Along each of the model's coordinates, m. A support that holds none but these links goes along; one
+        that holds others, too, stays, and with it that end of the link.
+    """
+    held: dict[str, set[bool]] = {}
+    for link in model.links:
+        for end in (link.from_, link.to):
+            if end.support is not None:
+                held.setdefault(end.support, set()).add(link.id in ids)
+    alone = [support for support, among in held.items() if among == {True}]
+    placed_so = {body.id: body.position for body in model.bodies}
+
+    def slide(end: End) -> End:
+        at = placed_so.get(end.body or "")
+        if at is None:
+            return end
+        old = end.offset or tuple(Entry("0 m", 0.0) for _ in at)
+        like = old if end.offset else at
+        sums = [decimal_of(one.si) + decimal_of(by) for one, by in zip(old, step, strict=True)]
+        offset = tuple(length_like(unit, float(total)) for unit, total in zip(like, sums, strict=True))
+        return replace(end, offset=offset if any(sums) else None)
+
+    links = tuple(
+        replace(link, from_=slide(link.from_), to=slide(link.to)) if link.id in ids and any(step) else link
+        for link in model.links
+    )
+    model = _moved_each(model, dict.fromkeys(alone, tuple(step)), follow=False)
+    return replace(model, links=links) if _differ(model.links, links) else model
+
+
 @dataclass(frozen=True, slots=True)
 class _Extent:
     """Where a part begins and ends along one coordinate, m, in decimals: two equal edges are equal."""

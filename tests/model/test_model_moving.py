@@ -7,7 +7,7 @@ import pytest
 from modalview.errors import InputError, ModelFaultsError
 from modalview.model.adding import add_body, add_link, add_support, end_at
 from modalview.model.entries import point_of
-from modalview.model.moving import aligned, moved, placed, reattached, resized, spread
+from modalview.model.moving import aligned, moved, placed, reattached, resized, slid, spread
 from modalview.model.parts import Body, Drawn, End, Model, Motion, Support
 from modalview.model.values import Entry
 
@@ -118,3 +118,39 @@ def test_parts_are_spread_evenly_between_the_outermost():
     assert after.bodies[0] is bodies[0]
     assert spread(after, ["b0", "b1", "b2"], "sideways") is after
     assert spread(model, ["b0", "b1"], "sideways") is model
+
+
+def offsets(model, link):
+    found = next(one for one in model.links if one.id == link)
+    return [entry.text for entry in found.from_.offset or ()]
+
+
+@pytest.mark.parametrize(("motion", "step"), [(Motion.PLANE, (0.1, 0.2)), (Motion.SPACE, (0.1, 0.3, 0.2))])
+def test_a_link_slides_along_its_body_with_a_foot_of_its_own_and_without_one_that_others_share(motion, step):
+    before = standing(motion)
+    after = slid(before, ["k1"], step)
+    told = ["0.1 m", "0.2 m"] if motion is Motion.PLANE else ["0.1 m", "0.3 m", "0.2 m"]
+    assert offsets(after, "k1") == told
+    assert texts(after, "s1") == told
+    assert after.bodies is before.bodies
+    assert after.links[1:] == before.links[1:]
+    shared = slid(before, ["k2"], step)
+    assert offsets(shared, "k2") == told
+    assert shared.supports is before.supports
+    both = slid(before, ["k2", "k3"], step)
+    assert texts(both, "s2")[0] == "1.1 m"
+
+
+def test_a_link_that_slides_back_has_no_offset_and_one_that_stays_is_the_same():
+    before = standing()
+    there = slid(before, ["k1"], (0.1, 0.2))
+    assert slid(there, ["k1"], (-0.1, -0.2)).links[0].from_.offset is None
+    assert slid(before, ["k1"], (0.0, 0.0)).links is before.links
+
+
+def test_a_link_between_bodies_slides_on_both():
+    model, one = add_body(Model(motion=Motion.PLANE), "body", (0.0, 1.0), (0.6, 0.4))
+    model, other = add_body(model, "body", (0.0, 0.0), (0.6, 0.4))
+    model, link = add_link(model, "spring", End(body=one), End(body=other))
+    after = slid(model, [link], (0.2, 0.0))
+    assert [entry.text for entry in after.links[0].to.offset] == offsets(after, link) == ["0.2 m", "0 m"]

@@ -389,6 +389,30 @@ def test_a_body_moved_in_a_plane_changes_the_verdict_as_it_goes(plane, qtbot):
     plane.let_go(plane.part("b1", 0.3, 0.3))
 
 
+def test_a_mount_is_moved_along_its_body_by_dragging_it_and_by_arrow_keys(plane):
+    plane.tool("B")
+    plane.drag(plane.at(-0.8, 0.4), plane.at(0.8, 1.2))
+    plane.key(Qt.Key.Key_Escape)
+    plane.tool("T")
+    plane.drag(plane.at(-0.6, 0.5), plane.at(-0.6, -0.4))
+    plane.key(Qt.Key.Key_Escape)
+    before, steps = model(plane), plane.window.document.stack.count()
+    plane.click(plane.at(0.4, -0.3))  # nothing is chosen any more
+    plane.drag(plane.at(-0.6, 0.0), plane.at(-0.3, 0.0))
+    after = model(plane)
+    assert plane.window.document.stack.undoText() == "Move mt1"
+    assert after.links[0].from_.offset[0].si - before.links[0].from_.offset[0].si == pytest.approx(0.3)
+    assert place(after.supports[0])[0] - place(before.supports[0])[0] == pytest.approx(0.3)
+    assert place(after.supports[0])[1] == place(before.supports[0])[1]
+    assert after.bodies == before.bodies
+    plane.key(Qt.Key.Key_Right)
+    assert place(model(plane).supports[0])[0] > place(after.supports[0])[0]
+    for _ in range(2):
+        plane.window.document.stack.undo()
+    assert model(plane) == before
+    assert plane.window.document.stack.index() == steps
+
+
 def test_a_double_click_asks_for_the_values_of_a_part(sketch):
     two_masses(sketch)
     where = sketch.part("right")

@@ -4,7 +4,7 @@ from typing import Any
 
 from modalview.drawing import hits
 from modalview.drawing.snap import Wish
-from modalview.model.moving import moved, reattached, resized
+from modalview.model.moving import moved, reattached, resized, slid
 from modalview.model.parts import Model
 from modalview.ui.sketch import depth
 from modalview.ui.sketch.joining import Grip, Join
@@ -57,9 +57,11 @@ class Choose(Tool):
             hand.toggle(part)
         elif part not in hand.chosen:
             hand.choose((part,))
-        if part not in hand.chosen or not hand.movable():
+        if part not in hand.chosen:
             return None
-        return lambda: Move(hand, at, part)
+        if hand.movable():
+            return lambda: Move(hand, at, part)
+        return (lambda: Slide(hand, at, part)) if hand.slides() else None
 
     def drag(self, at: Pointer) -> None:
         """Begin to drag once it is no click, then go on."""
@@ -153,7 +155,7 @@ class Move(Tool):
         # Everything is measured from the geometry at the press: the sheet is laid out anew meanwhile.
         self._geometry = hand.geometry
         self._ids = hand.chosen
-        self._base = hand.middle_of(part)
+        self._base = self._place_of(part)
         x, y = self._geometry.view.to_pixels(self._base[None])[0].tolist()
         self._grab = start.x - x, start.y - y
         self._from = (x, y)
@@ -178,7 +180,14 @@ class Move(Tool):
         for label, si in self._typed.items():
             target[_AXES.index(label)] = si
         step = self.hand.place(target - self._base)
-        self._trial.show(moved(self._trial.base, self._ids, step))
+        self._trial.show(self._moved(step))
+
+    def _place_of(self, part: str) -> Any:
+        """Return what of a part is drawn to the grid: where a body or support is in the world."""
+        return self.hand.middle_of(part)
+
+    def _moved(self, step: tuple[float, ...]) -> Model:
+        return moved(self._trial.base, self._ids, step)
 
     def release(self, at: Pointer) -> None:
         """Settle it."""
@@ -215,6 +224,16 @@ class Move(Tool):
         from modalview.drawing import overlay  # noqa: PLC0415  (numpy comes after the first paint)
 
         return overlay.hint_items(self._at)
+
+
+class Slide(Move):
+    """Moves links along on the bodies that they join, a foot of their own going along."""
+
+    def _place_of(self, part: str) -> Any:
+        return self.hand.end_of(part)
+
+    def _moved(self, step: tuple[float, ...]) -> Model:
+        return slid(self._trial.base, self._ids, step)
 
 
 class Resize(Tool):

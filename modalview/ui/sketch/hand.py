@@ -164,6 +164,13 @@ class Hand(QObject):
 
         return point(self.part(part, self.placed_model()).position)
 
+    def end_of(self, link: str) -> Any:
+        """Return where the first end of a link is in the world."""
+        from modalview.drawing.layout import point  # noqa: PLC0415  (see above)
+
+        end = self.part(link).from_
+        return self.middle_of(end.body or end.support) + point(end.offset)
+
     def placed_model(self) -> Model:
         """Return the model with a position for every body and support, as the sheet shows them."""
         from modalview.drawing.placing import positioned  # noqa: PLC0415  (see above)
@@ -195,6 +202,12 @@ class Hand(QObject):
     def movable(self) -> bool:
         """Tell whether a body or a support is among what is chosen."""
         return any(isinstance(self.part(part), Body | Support) for part in self.chosen)
+
+    def slides(self) -> bool:
+        """Tell whether links alone are chosen, and may be moved along on their bodies."""
+        links = [self.part(part) for part in self.chosen]
+        on_places = self.model.motion is not Motion.SHAFT_TRAIN
+        return on_places and all(isinstance(one, Link) and one.kind != "gear" for one in links)
 
     # What tools do
 
@@ -465,13 +478,13 @@ class Hand(QObject):
             )
             self._point_with_cross()
             return True
-        if not self.movable():
+        if not self.movable() and not (self.chosen and self.slides()):
             return False
         self._nudge(step, times)
         return True
 
     def _nudge(self, step: tuple[int, int], times: int) -> None:
-        from modalview.model.moving import moved  # noqa: PLC0415  (used by hand only)
+        from modalview.model.moving import moved, slid  # noqa: PLC0415  (used by hand only)
 
         across, up = self.axes_shown()
         by = [0.0, 0.0, 0.0]
@@ -479,7 +492,8 @@ class Hand(QObject):
         by[up] = -step[1] * times * self.grid(1)
         count = 3 if self.model.motion is Motion.SPACE else 2
         self.hold_view()
-        after = moved(self.placed_model(), self.chosen, tuple(by[:count]))
+        move = moved if self.movable() else slid
+        after = move(self.placed_model(), self.chosen, tuple(by[:count]))
         self.change(after, f"Move {self.named(self.chosen)}", merge=("nudge", self.chosen))
 
     def _cross_start(self) -> tuple[float, float]:
