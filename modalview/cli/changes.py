@@ -15,7 +15,7 @@ from modalview.store import read_model
 from modalview.study import Request
 from modalview.study.changes import ChangesRequest, Place, changes
 from modalview.study.look import look
-from modalview.study.remedies import RemediesRequest, remedies
+from modalview.study.remedies import RemediesRequest, absorber_frequency, remedies
 from modalview.units import quantities as q
 from modalview.units.parse import read
 from modalview.units.quantities import Quantity
@@ -134,11 +134,10 @@ def _tuned_to(words: argparse.Namespace, model: Model) -> float:
     if words.tuned_to is not None:
         return _number("--tuned-to", words.tuned_to, q.FREQUENCY) / RAD_PER_HZ
     checks = look(Request(model)).checks
-    fixed = [one for one in checks if one.band.excitation[0] == one.band.excitation[1]]
-    if not fixed:
+    single = any(one.band.excitation[0] == one.band.excitation[1] for one in checks)
+    if not single and not words.damped:
         raise UsageError('--absorber wants --tuned-to "1180 rpm": no excitation has a single frequency')
-    first = next((one for one in fixed if one.verdict.value != "clear"), fixed[0])
-    return first.band.excitation[0] / RAD_PER_HZ
+    return absorber_frequency(checks)
 
 
 def _number(word: str, text: str, quantity: Quantity) -> float:

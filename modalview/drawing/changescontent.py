@@ -173,7 +173,9 @@ def changes_content(
         How much room there is where everything is clear.
     """
     system = known.request.model.units or "SI"
-    options = [one for one in (*found.options, *others.options) if not found.clear_now]
+    wanted = [one for one in others.options if others.asked.absorbers and one.kind is Kind.ABSORBER]
+    rest = [one for one in (*found.options, *others.options) if one not in wanted and not found.clear_now]
+    options = [*wanted, *rest]
     columns = _columns(options)
     costs = tuple(dict.fromkeys(cost.what for one in options for cost in one.costs))
     lines = [_line(one, columns, costs, found.windows) for one in options]

@@ -22,7 +22,7 @@ from modalview.model.differences import Rewrite, checked_edit
 from modalview.model.loadcases import in_load_case
 from modalview.model.parts import Excitation, Machine, Model, SpeedRange
 from modalview.model.values import Entry
-from modalview.resonance.results import Verdict
+from modalview.resonance.results import Check, Verdict
 from modalview.resonance.speedruns import RPM, State
 from modalview.study.campbell import campbell, is_left, speeds_of
 from modalview.study.look import RAD_PER_HZ
@@ -144,6 +144,28 @@ def _tell(request: Request, what: str, share: float) -> None:
 
 
 # Absorbers
+
+
+def absorber_frequency(checks: Sequence[Check]) -> float:
+    """Return what an absorber is tuned to where nobody says: the first single excitation that is not clear.
+
+    Parameters
+    ----------
+    checks : sequence of Check
+        Where all are clear, or none has a single frequency, the first single one, or the middle of the first
+        range, counts; Hz.
+
+    Raises
+    ------
+    InputError
+        There is no check.
+    """
+    if not checks:
+        raise InputError("an absorber is tuned to an excitation: give a machine its speed and its orders")
+    single = [one for one in checks if one.band.excitation[0] == one.band.excitation[1]]
+    bad = [one for one in single if one.verdict is not Verdict.CLEAR]
+    low, high = (bad or single or list(checks))[0].band.excitation
+    return (low + high) / 2 / RAD_PER_HZ
 
 
 def _fitting_absorbers(solution: Solution) -> Iterator[Absorber]:

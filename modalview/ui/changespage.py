@@ -6,10 +6,13 @@ from PySide6.QtCore import Qt, Signal
 from PySide6.QtGui import QKeyEvent, QShowEvent
 from PySide6.QtWidgets import QComboBox, QHBoxLayout, QLabel, QSizePolicy, QVBoxLayout, QWidget
 
+from modalview.model.parts import Model
+from modalview.ui.absorberline import AbsorberLine
 from modalview.ui.changestable import OptionsTable
 from modalview.ui.chartcanvas import ChartCanvas
 from modalview.ui.chartpage import ChartPage
 from modalview.ui.chartroom import ChartRoom
+from modalview.ui.elided import PART
 from modalview.ui.inquiry import Inquiry, Question
 from modalview.ui.questions import changes
 
@@ -99,6 +102,7 @@ class ChangesRoom(ChartRoom):
         self.ceilings = QLabel(self)
         self.ceilings.setWordWrap(True)
         self.ceilings.setProperty("role", "small")
+        self.absorber = AbsorberLine(self)
         heading = QLabel("Windows of", self)
         heading.setProperty("role", "strong")
         heading.setBuddy(self.value)
@@ -111,6 +115,7 @@ class ChangesRoom(ChartRoom):
         column.addLayout(row)
         column.addWidget(canvas)
         column.addWidget(self.ceilings)
+        column.addWidget(self.absorber)
         self._layout.insertLayout(0, column)
 
     def fit(self) -> None:
@@ -118,6 +123,7 @@ class ChangesRoom(ChartRoom):
         self._layout.setDirection(self._layout.Direction.TopToBottom)
         self.canvas.setFixedHeight(round(_HIGH * self.fontMetrics().height()))
         self.options.fit()
+        self.absorber.fit()
 
 
 class ChangesPage(ChartPage):
@@ -139,7 +145,21 @@ class ChangesPage(ChartPage):
         self.options.currentCellChanged.connect(lambda *_: self._show_value_of_option())
         self.value.currentIndexChanged.connect(lambda _: self._show_axis())
         self._shown: Any = None
+        self._wanted: tuple[Any, ...] = ()
+        room.absorber.asked.connect(self._on_absorber)
         self.setFocusProxy(self.options)
+
+    def follow(self, model: Model | None, *, anew: bool) -> None:
+        """Ask about a model; an absorber that was wanted is wanted of it alone."""
+        if model is not self.inquiry.model:
+            self._wanted = ()
+        if model is not None:
+            self.room.absorber.show_model(model)
+        self.inquiry.follow(model, self._wanted, anew=anew)
+
+    def _on_absorber(self, wanted: Any) -> None:
+        self._wanted = tuple(wanted)
+        self.inquiry.follow(self.inquiry.model, self._wanted)
 
     def show_result(self) -> None:
         """Show the answer."""
@@ -185,9 +205,11 @@ class ChangesPage(ChartPage):
     def _show_value_of_option(self) -> None:
         row = self.options.currentRow()
         if self._shown is not None and 0 <= row < len(self._shown.options):
-            index = self.value.findData(self._shown.options[row].value)
+            option = self._shown.options[row]
+            index = self.value.findData(option.value)
             if index >= 0:
                 self.value.setCurrentIndex(index)
+            self.reading.setText(option.detail.replace("\n", PART))
 
     def _show_axis(self) -> None:
         content = self._shown

@@ -7,6 +7,7 @@ from collections.abc import Callable
 from dataclasses import replace
 from typing import Any, NamedTuple
 
+from modalview.errors import InputError
 from modalview.model.parts import End, Model
 
 
@@ -67,20 +68,45 @@ def mounts(model: Model, details: tuple[Any, ...], stopped: Callable[[], bool]) 
     return replace(found, request=replace(found.request, cancelled=never))
 
 
+class WantedAbsorber(NamedTuple):
+    """An absorber that somebody wants to see among the options; its mass ratio as typed."""
+
+    body: str
+    direction: str
+    mass_ratio: str
+    damped: bool
+
+
 def changes(model: Model, details: tuple[Any, ...], stopped: Callable[[], bool]) -> Any:
-    """Return what the page of changes shows (drawing.changescontent)."""
+    """Return what the page of changes shows (drawing.changescontent), with an absorber that is wanted."""
     from modalview.drawing.changescontent import changes_content, clear_by  # noqa: PLC0415
     from modalview.study.changes import ChangesRequest  # noqa: PLC0415
     from modalview.study.changes import changes as look_for  # noqa: PLC0415
     from modalview.study.look import look  # noqa: PLC0415
     from modalview.study.present import present  # noqa: PLC0415
-    from modalview.study.remedies import RemediesRequest, remedies  # noqa: PLC0415
     from modalview.study.results import Request  # noqa: PLC0415
 
-    del details
     request = Request(model, cancelled=stopped)
     outlook = look(request)
     found = look_for(ChangesRequest(request))
-    others = remedies(RemediesRequest(request))
+    others, refused = _remedies(request, outlook.checks, WantedAbsorber(*details) if details else None)
     margin = clear_by(present(request)) if found.clear_now and outlook.checks else ""
-    return changes_content(outlook, found, others, outlook.assembly.parameters, margin)
+    content = changes_content(outlook, found, others, outlook.assembly.parameters, margin)
+    return replace(content, notes=(*refused, *content.notes))
+
+
+def _remedies(request: Any, checks: Any, wanted: WantedAbsorber | None) -> tuple[Any, tuple[str, ...]]:
+    """Return absorbers, places of mounts and speeds, and why a wanted absorber cannot be."""
+    from modalview.advice.absorber import Absorber  # noqa: PLC0415
+    from modalview.study.remedies import RemediesRequest, absorber_frequency, remedies  # noqa: PLC0415
+    from modalview.units.parse import read  # noqa: PLC0415
+    from modalview.units.quantities import RATIO  # noqa: PLC0415
+
+    if wanted is None:
+        return remedies(RemediesRequest(request)), ()
+    try:
+        ratio, hz = read(wanted.mass_ratio, RATIO), absorber_frequency(checks)
+        one = Absorber(wanted.body, wanted.direction, hz, ratio, wanted.damped)
+        return remedies(RemediesRequest(request, (one,))), ()
+    except InputError as error:
+        return remedies(RemediesRequest(request)), (f"No absorber: {error}",)

@@ -6,13 +6,13 @@ import pytest
 
 from modalview.advice.absorber import Absorber
 from modalview.advice.changes.results import Kind
-from modalview.errors import CancelledError
+from modalview.errors import CancelledError, InputError
 from modalview.model.parts import LoadCase, LoadChange
 from modalview.places import demo_models
 from modalview.resonance.results import Verdict
 from modalview.store import read_model
 from modalview.study import Request, look
-from modalview.study.remedies import RemediesRequest, remedies
+from modalview.study.remedies import RemediesRequest, absorber_frequency, remedies
 
 RETROFIT = demo_models() / "6-vacuum-pump-absorber" / "no-absorber.keepclear"
 SPRINGS = demo_models() / "2-supply-fan" / "steel-springs.keepclear"
@@ -92,3 +92,12 @@ def test_it_can_be_stopped():
     model = read_model(SPRINGS)
     with pytest.raises(CancelledError):
         remedies(RemediesRequest(Request(model, cancelled=lambda: True)))
+
+
+def test_frequency_of_an_absorber_is_the_first_single_one_that_is_not_clear():
+    checks = look(Request(read_model(RETROFIT))).checks
+    assert absorber_frequency(checks) == pytest.approx(1180 / 60)
+    ranged = look(Request(read_model(SPRINGS))).checks
+    assert absorber_frequency(ranged) == pytest.approx(20.0)
+    with pytest.raises(InputError, match="give a machine its speed"):
+        absorber_frequency(())

@@ -8,10 +8,12 @@ from PySide6.QtCore import Qt
 from PySide6.QtTest import QTest
 
 from modalview.model.parts import LoadCase, LoadChange
+from modalview.places import demo_models
 from modalview.store import read_model
 from modalview.ui.changespage import ChangesPage
 from modalview.ui.questions import changes
 
+RETROFIT = demo_models() / "6-vacuum-pump-absorber" / "no-absorber.keepclear"
 CLEAR = PUMP.with_name("part-grout-and-anchors.keepclear")
 
 
@@ -19,11 +21,11 @@ _ANSWERS = []  # about models that were asked about: the search itself is tested
 
 
 def known_changes(model, details, stopped):
-    for one, answer in _ANSWERS:
-        if one == model:
+    for one, other, answer in _ANSWERS:
+        if (one, other) == (model, details):
             return answer
-    _ANSWERS.append((model, changes(model, details, stopped)))
-    return _ANSWERS[-1][1]
+    _ANSWERS.append((model, details, changes(model, details, stopped)))
+    return _ANSWERS[-1][2]
 
 
 @pytest.fixture(scope="session", autouse=True)
@@ -129,6 +131,7 @@ def test_out_of_date_options_cannot_be_tried(pump, page):
 def test_axis_goes_with_the_option_and_is_read_by_keys(page):
     page.options.setCurrentCell(2, 1)
     assert page.canvas.content.value == "base.mass"
+    assert page.reading.text().startswith("Raise mass of baseplate")
     page.value.setCurrentIndex(page.value.findData("k3.stiffness"))
     read = []
     page.canvas.read.connect(read.append)
@@ -158,3 +161,31 @@ def test_load_cases_are_cleared_together(pump, qtbot):
     head, first, *_ = page.options.rows_text()
     assert "1× unbalance (full)" in head
     assert first[head.index("1× unbalance (full)")].startswith("clear")
+
+
+def wanted(page, qtbot, ratio):
+    line = page.room.absorber
+    line.ratio.setText(ratio)
+    line.show_it.click()
+    qtbot.waitUntil(lambda: page.inquiry.current and not page.inquiry.busy, timeout=10000)
+
+
+def test_an_absorber_that_is_asked_for_stands_first(window, qtbot):
+    window.document.open(RETROFIT, example=True)
+    settle(qtbot, window)
+    page = shown(window, qtbot)
+    wanted(page, qtbot, "5 %")
+    _, first, *_ = page.options.rows_text()
+    assert first[2] == "105 kg, 1.6 kN/mm"
+    assert first[4].startswith("nominal only")
+    page.options.setCurrentCell(0, 1)
+    assert "modes at 17.69 Hz" in page.reading.text()
+    page.options.cellWidget(0, 0).click()
+    settle(qtbot, window)
+    assert [one.name for one in window.document.model.bodies][-1] == "absorber"
+
+
+def test_an_absorber_that_cannot_be_says_why(page, qtbot):
+    wanted(page, qtbot, "heavy")
+    assert "No absorber:" in page.room.notes.text()
+    assert page.options.rowCount() > 1
