@@ -9,6 +9,7 @@ from modalview.drawing.layout import GROUND, Layout, layout
 from modalview.drawing.linkends import LinkEnds, link_ends
 from modalview.drawing.marks import body_marks
 from modalview.drawing.outline import Outlines, faces, outlines
+from modalview.drawing.pauses import in_pieces
 from modalview.drawing.primitives import Floats, Text
 from modalview.drawing.symbols import Symbol
 from modalview.drawing.view import View, Viewpoint, fitted, projection
@@ -246,7 +247,9 @@ def bare_geometry(
     places = layout(model)
     view, outline = _fit(model, places, area, view, grow)
     collector = _Collector()
-    faces_of = [faces(outline, number, model.motion, view.viewpoint) for number in range(len(model.bodies))]
+    faces_of = [
+        faces(outline, number, model.motion, view.viewpoint) for number in in_pieces(range(len(model.bodies)))
+    ]
     boxes, fronts = _boxes(places, view, faces_of)
     face_points = _collect_faces(collector, places, view, faces_of)
     centres = collector.add(
@@ -303,7 +306,7 @@ def _fit(
         corners = [world]
         corners += [
             places.centres[number] + faces(outline, number, model.motion, viewpoint).reshape(-1, 3)
-            for number in range(len(model.bodies))
+            for number in in_pieces(range(len(model.bodies)))
         ]
         flat = _joined(corners) @ matrix.T
         found = fitted(flat, matrix, area, stretchable=places.stretchable, largest=largest)
@@ -323,7 +326,7 @@ def _largest(places: Layout, motion: Motion, grow: float) -> tuple[float, float]
 
 def _boxes(places: Layout, view: View, faces_of: list[Floats]) -> tuple[Floats, Floats]:
     boxes, fronts = np.zeros((2, len(faces_of), 4))
-    for number, body_faces in enumerate(faces_of):
+    for number, body_faces in enumerate(in_pieces(faces_of)):
         corners = view.to_pixels(places.centres[number] + body_faces)
         flat = corners.reshape(-1, 2)
         boxes[number] = (*flat.min(axis=0), *flat.max(axis=0))
@@ -340,12 +343,13 @@ def _collect_faces(
     collector: _Collector, places: Layout, view: View, faces_of: list[Floats]
 ) -> tuple[Indices, ...]:
     """Add the faces' corners, the bodies furthest from the eye first."""
-    depth = places.centres @ view.towards
+    towards = view.towards
+    depth = places.centres @ towards
     if len(faces_of) and len(faces_of[0]) == 1:  # what is seen of a body is its nearest face
-        depth = depth + np.array([face.reshape(-1, 3)[0] @ view.towards for face in faces_of])
+        depth = depth + np.array([face.reshape(-1, 3)[0] for face in faces_of]) @ towards
     order = np.argsort(depth, kind="stable").tolist()
     runs: list[list[Indices]] = []
-    for number in order:
+    for number in in_pieces(order):
         arms = faces_of[number]
         rest = view.to_pixels(places.centres[number] + arms)
         indices = collector.add(rest, arms, np.full(arms.shape[:2], number)).reshape(arms.shape[:2])

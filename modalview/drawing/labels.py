@@ -5,6 +5,7 @@ from dataclasses import dataclass
 import numpy as np
 import numpy.typing as npt
 
+from modalview.drawing.pauses import between_pieces
 from modalview.drawing.primitives import Anchor, Floats, Role, Size, Text
 from modalview.drawing.textsize import line_height, text_width
 
@@ -122,6 +123,7 @@ class Board:
         over : slice or None
             Of what is taken, what the label may cover.
         """
+        between_pieces()
         if not spots:
             return []
         size = self.size(lines)

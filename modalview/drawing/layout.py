@@ -9,6 +9,7 @@ from dataclasses import dataclass
 
 import numpy as np
 
+from modalview.drawing.pauses import in_pieces
 from modalview.drawing.primitives import Floats
 from modalview.model.parts import End, Gear, Link, Model, Motion, Point
 
@@ -178,7 +179,7 @@ def _walk(
 def _lanes(links: tuple[Link, ...]) -> Floats:
     """Spread links between the same ends sideways about the middle."""
     groups: dict[object, list[int]] = defaultdict(list)
-    for number, link in enumerate(links):
+    for number, link in enumerate(in_pieces(links)):
         ends = sorted((_end_key(link.from_), _end_key(link.to)))
         groups[tuple(ends)].append(number)
     lanes = np.zeros(len(links))
@@ -197,7 +198,7 @@ def _true_ends(
 ) -> Floats:
     supports = {support.id: support for support in model.supports}
     ends = np.zeros((len(model.links), 2, 3))
-    for number, link in enumerate(model.links):
+    for number, link in enumerate(in_pieces(model.links)):
         for side, end in enumerate((link.from_, link.to)):
             body = end_bodies[number, side]
             support = supports.get(end.support or "")
@@ -221,7 +222,7 @@ def _upright_ends(
     heights = {s.id: point(s.position)[1] for s in model.supports if s.position is not None}
     below = _height_of_ground(centres)
     ends = np.zeros((len(model.links), 2, 3))
-    for number, link in enumerate(model.links):
+    for number, link in enumerate(in_pieces(model.links)):
         pair = end_bodies[number]
         bodies = [int(body) for body in pair if body != GROUND]
         lead = min(bodies, key=lambda body: counts[body], default=None)

@@ -7,6 +7,7 @@ import numpy as np
 import numpy.typing as npt
 
 from modalview.drawing.layout import GROUND, Layout
+from modalview.drawing.pauses import in_pieces
 from modalview.drawing.primitives import Floats
 from modalview.drawing.symbols import Symbol
 from modalview.drawing.view import View
@@ -61,7 +62,7 @@ def link_ends(
         Whether a space model is seen along one of its axes.
     """
     ends = view.to_pixels(places.ends)
-    pulls = [_pull(link, model.motion, view) for link in model.links]
+    pulls = [_pull(link, model.motion, view) for link in in_pieces(model.links)]
     end_on = _end_on(places, ends, view, pulls, COINCIDENT * grow) if straight else np.zeros(len(ends), bool)
     lanes = _overlapping(ends, end_on) if straight else places.lanes
     sideways = lanes[:, None] * (BESIDE if straight else LANE) * grow * _across(ends)
@@ -69,7 +70,7 @@ def link_ends(
         ends += sideways[:, None]
     joints = np.zeros(len(ends), dtype=bool)
     on_top = end_on | _in_front(places, view, straight=straight) if _space(model) else joints.copy()
-    for number, link in enumerate(model.links):
+    for number, link in enumerate(in_pieces(model.links)):
         pair, pull = places.end_bodies[number], pulls[number]
         pull = pull if pull is not None and pull.any() else None
         if end_on[number]:

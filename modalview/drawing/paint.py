@@ -9,6 +9,7 @@ from PySide6.QtCore import QLineF, QPointF, QRectF, Qt
 from PySide6.QtGui import QBrush, QColor, QFont, QFontMetricsF, QPainter, QPen
 
 from modalview.drawing.palette import Palette
+from modalview.drawing.pauses import between_pieces
 from modalview.drawing.primitives import (
     Anchor,
     Box,
@@ -104,6 +105,7 @@ class _Painting:
     def run(self, items: tuple[Item, ...]) -> None:
         self.painter.setRenderHint(QPainter.RenderHint.Antialiasing)
         for item in items:
+            between_pieces()
             match item:
                 case Lines():
                     self.lines(item)

@@ -4,6 +4,7 @@ Hundreds of bodies are hundreds of calls into Qt, each of which gives the interp
 get it back: while another thread computed, one frame stopped the window for a tenth of a second.
 """
 
+from collections.abc import Callable
 from dataclasses import dataclass
 from functools import partial
 from time import perf_counter
@@ -13,6 +14,7 @@ from PySide6.QtCore import QObject, QSize, Signal
 from PySide6.QtGui import QImage
 
 from modalview.ui.canvas import image_of
+from modalview.ui.front import give_way
 from modalview.ui.later import Later
 from modalview.ui.theme import Theme
 
@@ -82,7 +84,7 @@ class CrowdPainter(QObject):
         if moment != self._shown and self._asked is None:
             self._asked = moment
             kept = self._still[1] if self._still is not None and self._still[0] == moment.still else None
-            self._later.ask("picture", partial(_painted, moment, kept))
+            self._later.ask("picture", partial(paused, partial(_painted, moment, kept)))
         return self._image
 
     def forget(self) -> None:
@@ -100,6 +102,14 @@ class CrowdPainter(QObject):
         self._shown, self._asked = self._asked, None
         self._still = self._shown.still, still
         self.painted.emit(took_ms)
+
+
+def paused(work: Callable[[], Any]) -> Any:
+    """Do what draws in a thread, with pauses while the window has something to show."""
+    from modalview.drawing.pauses import pausing  # noqa: PLC0415  (numpy comes after the first paint)
+
+    with pausing(give_way):
+        return work()
 
 
 def _painted(moment: Moment, still: QImage | None) -> tuple[QImage, QImage, float]:

@@ -14,6 +14,7 @@ from modalview.model.edits import Edit, set_typed
 from modalview.model.parts import Model
 from modalview.store import FileStamp, open_model, save_model
 from modalview.ui.commands import EditCommand, Together
+from modalview.ui.front import window_first
 
 
 @dataclass(frozen=True, slots=True, eq=False)
@@ -199,4 +200,5 @@ class Document(QObject):
     def replace_model(self, model: Model) -> None:
         """Put an edited model in place; for the undo commands alone."""
         self.model = model
+        window_first()
         self.model_changed.emit()

@@ -6,6 +6,7 @@ from typing import Any
 
 from PySide6.QtCore import QObject, QThreadPool, Signal, Slot
 
+from modalview.ui.front import give_way, window_first
 from modalview.ui.garbage import few_collections
 
 Work = Callable[[Callable[[], bool]], Any]  # is told how to ask whether it was called off
@@ -37,11 +38,15 @@ class Errand(QObject):
         stop = self._stop = Event()
         self._then = then
 
+        def stopped() -> bool:
+            give_way()
+            return stop.is_set()
+
         def do() -> None:
             result = error = None
             try:
                 with few_collections():
-                    result = work(stop.is_set)
+                    result = work(stopped)
             except Exception as raised:  # noqa: BLE001  (it is raised again, or told, where people are)
                 error = raised
             if not stop.is_set():
@@ -68,5 +73,6 @@ class Errand(QObject):
             return
         then = self._then
         self._stop = self._then = None
+        window_first()
         self.busy_changed.emit("")
         then(result, error)

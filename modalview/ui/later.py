@@ -6,6 +6,7 @@ from typing import Any
 
 from PySide6.QtCore import QObject, QThreadPool, QTimer, Signal, Slot
 
+from modalview.ui.front import give_way, window_first
 from modalview.ui.garbage import few_collections
 
 # One piece of work at a time, whoever asked: each thread that computes takes its share of the interpreter
@@ -35,6 +36,7 @@ class Later(QObject):
                 if self._wanted.get(key) is not ticket:
                     return
                 with few_collections():
+                    give_way()
                     result = work()
             self._finished.emit(key, ticket, result)
 
@@ -58,4 +60,5 @@ class Later(QObject):
     def _on_finished(self, key: Hashable, ticket: object, result: Any) -> None:
         if self._wanted.get(key) is ticket:
             del self._wanted[key]
+            window_first()
             self.done.emit(key, result)

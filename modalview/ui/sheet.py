@@ -22,7 +22,7 @@ from PySide6.QtWidgets import QSizePolicy, QWidget
 from modalview.model.parts import Model, Motion
 from modalview.ui import crowd
 from modalview.ui.canvas import paint_drawing, painted
-from modalview.ui.crowd import CrowdPainter
+from modalview.ui.crowd import CrowdPainter, paused
 from modalview.ui.later import Later
 from modalview.ui.swing import Swing
 from modalview.ui.theme import LIGHT, Theme
@@ -229,7 +229,7 @@ class Sheet(QWidget):
             self._background.forget()
             self._show_geometry("sheet", lay_out())
         else:
-            self._background.ask("sheet", lay_out)
+            self._background.ask("sheet", partial(paused, lay_out))
 
     def _fits_viewpoint(self) -> bool:
         """Whether scale and place that were kept are of the view that is shown now."""

@@ -13,11 +13,14 @@ from modalview.model.forms import FormLine
 from modalview.model.parts import Body, End, Machine, Model
 from modalview.model.tolerance_text import tolerance_text
 from modalview.model.values import Entry, Tolerance, Value
+from modalview.ui.front import give_way
 from modalview.units import quantities as q
 from modalview.units.quantities import Quantity
 from modalview.units.show import show, significant
 
 # The story is prose and stands beside the results; the system of units is no value of a part.
+# Parts counted between two looks whether the window has something to show.
+_PIECE = 16
 _NOT_IN_TABLE = ("notes", "units")
 # What of a machine stands in the results, to be changed while looking at the verdict.
 _IN_FORM = ("speed", "speed_tolerance", "margin")
@@ -106,6 +109,8 @@ class Lines(Sequence[ValueRow]):
         counts = []
         kept = before.parts if before is not None and before.model.motion is self.model.motion else ()
         for number, part in enumerate(self.parts):
+            if number % _PIECE == 0:
+                give_way()
             if number < len(kept) and kept[number].item is part.item:
                 counts.append(before.starts[number + 1] - before.starts[number])
                 continue

@@ -13,6 +13,8 @@ from PySide6.QtCore import QObject, QThread, Signal, Slot
 from modalview.errors import CancelledError, KeepclearError
 from modalview.model.parts import Model
 from modalview.ui.apart import Apart, is_large
+from modalview.ui.front import give_way, window_first
+from modalview.ui.garbage import few_collections
 from modalview.ui.studies import SMALL_MODEL, Find, Step, Studies
 from modalview.ui.studydoor import Study, load_drawing, load_study
 
@@ -51,9 +53,10 @@ class _Desk(QObject):
 
     @Slot()
     def on_started(self) -> None:
-        """Import while nobody waits."""
-        load_drawing()
-        self._studies = Studies(self._load())
+        """Import while nobody waits; searches for garbage leave out what the libraries made."""
+        with few_collections():
+            load_drawing()
+            self._studies = Studies(self._load())
 
     def close(self) -> None:
         """End the other process; called when the thread has ended."""
@@ -80,10 +83,15 @@ class _Desk(QObject):
         if self._studies is None:
             self._studies = Studies(self._load())
         place = self._apart if is_large(order.model) else self._studies
+
+        def stopped() -> bool:
+            give_way()
+            return order.stop.is_set()
+
         place.work(
             order.model,
             order.find,
-            order.stop.is_set,
+            stopped,
             lambda step, content: self._answer(order, step, content),
         )
 
@@ -132,4 +140,5 @@ class Worker(QObject):
     @Slot(object)
     def _on_answered(self, answer: Answer) -> None:
         if answer.number == self._latest.number:
+            window_first()
             self.answered.emit(answer)

@@ -71,6 +71,7 @@ def test_closing_calls_off_and_waits(some):
 
 def test_many_objects_are_left_out_of_later_searches_for_garbage(monkeypatch):
     monkeypatch.setattr(garbage, "MANY_OBJECTS", 50)
+    monkeypatch.setattr(garbage, "LONG_S", 60.0)
     frozen = gc.get_freeze_count()
     with garbage.few_collections():
         assert not gc.isenabled()
@@ -78,6 +79,14 @@ def test_many_objects_are_left_out_of_later_searches_for_garbage(monkeypatch):
     with garbage.few_collections():
         kept = [[] for _ in range(1000)]
     assert gc.isenabled()
+    assert gc.get_freeze_count() >= frozen + len(kept)
+
+
+def test_so_is_what_long_work_made(monkeypatch):
+    monkeypatch.setattr(garbage, "LONG_S", 0.0)
+    frozen = gc.get_freeze_count()
+    with garbage.few_collections():
+        kept = [[] for _ in range(1000)]
     assert gc.get_freeze_count() >= frozen + len(kept)
 
 
