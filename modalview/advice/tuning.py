@@ -151,11 +151,17 @@ class Follower:
         return State(logarithms.copy(), assembly, values, pencil.basis @ vectors, places)
 
 
-def fitted(follower: Follower) -> Fit:
+def fitted(follower: Follower, share: Sequence[float] | None = None) -> Fit:
     """Return the values within their ranges that bring the modes nearest to their targets.
 
     Least squares of (f - measured) / uncertainty over ln(value), by a trust region within bounds, with
-    analytic slopes.
+    analytic slopes. It finds the values nearest to where it starts; others may fit as well.
+
+    Parameters
+    ----------
+    follower : Follower
+    share : sequence of float or None
+        Where in each range it starts, 0 to 1 of its logarithm; None: at the values as typed.
 
     Raises
     ------
@@ -170,7 +176,9 @@ def fitted(follower: Follower) -> Fit:
     low = np.log([one.low for one in follower.chosen])
     high = np.log([one.high for one in follower.chosen])
     room = 1e-3 * (high - low)
-    start = np.clip(np.log([one.nominal for one in follower.chosen]), low + room, high - room)
+    nominal = np.log([one.nominal for one in follower.chosen])
+    wanted = nominal if share is None else low + np.asarray(share) * (high - low)
+    start = np.clip(wanted, low + room, high - room)
 
     def residuals(logarithms: Array) -> Array:
         return _residuals(follower.targets, follower.at(logarithms))

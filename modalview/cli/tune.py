@@ -173,7 +173,7 @@ def _alone_table(alone: Sequence[Alone]) -> str:
 
 
 def _otherwise_table(tried: Sequence[Alone]) -> str:
-    rows = [["paired otherwise", "values", "missed by"]]
+    rows = [["otherwise", "values", "missed by"]]
     rows += [
         [
             one.label,

@@ -2,7 +2,9 @@
 
 import math
 from collections.abc import Sequence
+from contextlib import suppress
 from dataclasses import dataclass, replace
+from itertools import product
 from time import perf_counter
 
 import numpy as np
@@ -43,6 +45,10 @@ RAD_PER_HZ = 2 * math.pi
 LARGEST_TUNED = 1500
 # To tell where a value would go without its range: so many times its size to both sides.
 FREE = 1000.0
+# Where in their ranges two or three values are started from, too; answers nearer than this are one.
+CORNERS, MOST_CORNERED, SAME = (0.1, 0.9), 3, 1e-6
+# Misfits equal to so many decimals are equally good: the fit from the values as typed goes first.
+MISFIT_DIGITS = 6
 # Other pairings tried at most, and values tried alone.
 MOST_OTHERWISE, MOST_ALONE = 6, 60
 # Tuned values are rounded to so many digits that the last is worth less than this share of the interval.
@@ -124,9 +130,39 @@ def _found(task: _Task) -> TuneResult:
     if refused:
         return replace(blank, refused=refused)
     try:
-        return _tuned(task, fitted(task.follower(task.values)), blank)
+        fit, more = _fits(task)
     except NotConvergedError as reason:
         return replace(blank, refused=str(reason))
+    return _tuned(task, fit, replace(blank, otherwise=more))
+
+
+def _fits(task: _Task) -> tuple[Fit, tuple[Alone, ...]]:
+    """Return the best fit of several starts, and others that meet the peaks as well.
+
+    Peaks can have more than one answer in several values: two frequencies are met by roots of a quadratic.
+    """
+    found = [fitted(task.follower(task.values))]
+    if 1 < len(task.values) <= MOST_CORNERED:
+        for number, corner in enumerate(product(CORNERS, repeat=len(task.values))):
+            task.tell("other starts", number / len(CORNERS) ** len(task.values))
+            with suppress(NotConvergedError):
+                found.append(fitted(task.follower(task.values), corner))
+    best = min(found, key=lambda one: round(one.misfit, MISFIT_DIGITS))
+    more: list[Fit] = []
+    for one in found:
+        if _met(one) and all(_apart(one, other) for other in (best, *more)):
+            more.append(one)
+    return best, tuple(_as_alone("other values", task.values, one) for one in more)
+
+
+def _met(fit: Fit) -> bool:
+    return float(np.abs(fit.residuals).max()) <= NORMAL_95 and not any(fit.at_end)
+
+
+def _apart(one: Fit, other: Fit) -> bool:
+    """Tell whether two fits are different answers, not one within its interval."""
+    spread = NORMAL_95 * np.maximum(deviations(one.weighted), SAME)
+    return bool(np.any(np.abs(np.log(one.values / other.values)) > 2 * spread))
 
 
 def _task(request: TuneRequest, solution: Solution | None) -> _Task:
@@ -207,7 +243,9 @@ def _tuned(task: _Task, fit: Fit, blank: TuneResult) -> TuneResult:
     if refused:
         return replace(blank, combinations=told, refused=refused)
     values, peaks = _values(task, fit, weighted), _fitted_peaks(task, fit, blank.peaks)
-    found = replace(blank, combinations=told, values=values, peaks=peaks, otherwise=_otherwise(task))
+    found = replace(
+        blank, combinations=told, values=values, peaks=peaks, otherwise=(*blank.otherwise, *_otherwise(task))
+    )
     if any(one.at_end for one in values):
         return replace(found, refused=beyond(values, peaks, _free(task, task.values)))
     edit = _edit(task.request.model, values, [peak.id for peak, _ in task.taken])
@@ -374,9 +412,13 @@ def _tried(label: str, follower: Follower) -> list[Alone]:
         fit = fitted(follower)
     except NotConvergedError:
         return []
+    return [_as_alone(label, follower.chosen, fit)]
+
+
+def _as_alone(label: str, chosen: Sequence[Chosen], fit: Fit) -> Alone:
     worst = float(np.abs(fit.residuals).max())
-    values = tuple(zip(follower.chosen, fit.values.tolist(), strict=True))
-    return [Alone(label, values, worst, worst <= NORMAL_95, any(fit.at_end))]
+    values = tuple(zip(chosen, fit.values.tolist(), strict=True))
+    return Alone(label, values, worst, worst <= NORMAL_95, any(fit.at_end))
 
 
 def _notes(task: _Task) -> tuple[str, ...]:

@@ -90,7 +90,7 @@ def sentence(found: TuneResult) -> str:
     if missed:
         said += f" But {', '.join(_missed(one) for one in missed)}: another value is off, or the pairing is."
     if any(one.met and not one.at_end for one in found.otherwise):
-        said += " The peaks are met as well with another pairing: see below."
+        said += " Other values, or another pairing, meet the peaks as well: see below."
     return said + _verdicts(found)
 
 

@@ -114,6 +114,19 @@ def test_two_springs_from_two_peaks(k1, k2):
     assert max(abs(one.missed_by) for one in found.peaks) < 1e-2
 
 
+def test_second_answer_of_two_springs_is_told():
+    """Closed form: k1 = 2 k2' and k2 = k1' / 2 have the same two frequencies."""
+    k1, k2 = 900.0, 1500.0
+    low, high = two_in_line_hz(k1, k2)
+    peaks = [peak("p1", low, "b", "0.001 Hz"), peak("p2", high, "b", "0.001 Hz")]
+    found = tuned(two_in_line(1.1 * k1, k2, peaks), "k1=500 to 5000 N/m", "k2=200 to 3000 N/m")
+    assert [one.after for one in found.values] == pytest.approx([k1, k2], rel=1e-3)
+    (other,) = found.otherwise
+    assert other.label == "other values"
+    assert [si for _, si in other.values] == pytest.approx([2 * k2, k1 / 2], rel=1e-3)
+    assert "Other values, or another pairing, meet the peaks as well" in found.sentence
+
+
 def test_two_springs_side_by_side_cannot_be_told_apart():
     springs = [spring("k1", "a", "g", 2000.0), spring("k2", "a", "g", 2000.0), spring("k3", "b", "a", 900.0)]
     peaks = [peak("p1", 3.4, "a"), peak("p2", 11.0, "a")]
@@ -178,7 +191,7 @@ def test_other_pairing_that_fits_as_well_is_told():
     other = found.otherwise[0]
     assert other.label == "p as mode 2"
     assert other.met
-    assert "met as well with another pairing" in found.sentence
+    assert "another pairing, meet the peaks as well" in found.sentence
 
 
 def test_missed_peak_is_told_with_its_measure():
