@@ -3,7 +3,7 @@
 import math
 from collections.abc import Mapping, Sequence
 
-from modalview.advice.changes.results import Ceiling, Kind, Option, ValueWindows
+from modalview.advice.changes.results import Ceiling, Kind, Option, ValueWindows, Window
 from modalview.cli.cautions import CAUTION
 from modalview.cli.table import table, wrapped
 from modalview.cli.texts import FORMULA, title_line
@@ -126,12 +126,16 @@ def _values(values: Sequence[ValueWindows]) -> str:
     shown = [*helped, *others[: max(VALUES - len(helped), 0)]]
     rows = [["value", "now", "windows that clear everything", "alone it can move"]]
     for one in (one for one in values if one in shown):
-        windows = "; ".join(window.text for window in one.windows) or "none"
+        windows = "; ".join(map(_window, one.windows)) or "none"
         rows.append([one.label, one.text or "factor 1", windows, "; ".join(map(_ceiling, one.ceilings))])
     left = len(values) - len(shown)
     more = f"\nand {left} more values without a window" if left else ""
     head = "Each value alone, its tolerance moving along:"
     return f"{head}\n{table(rows)}{more}"
+
+
+def _window(one: Window) -> str:
+    return one.text if one.proven else f"{one.text} (not proven)"
 
 
 def _ceiling(one: Ceiling) -> str:

@@ -96,6 +96,8 @@ class ValueAxis:
     clear_now : bool
     ceilings : tuple of str
         Where it alone can bring a mode.
+    proven : bool
+        Whether counts prove the ends of all windows.
     """
 
     value: str
@@ -109,6 +111,7 @@ class ValueAxis:
     limits: tuple[float, float]
     clear_now: bool
     ceilings: tuple[str, ...]
+    proven: bool = True
 
     @property
     def today(self) -> str:
@@ -326,6 +329,7 @@ def _axis(one: ValueWindows, of: Mapping[str, Parameter], system: str) -> ValueA
         limits=one.limits,
         clear_now=one.clear_now,
         ceilings=tuple(map(_ceiling, one.ceilings)),
+        proven=all(window.proven for window in one.windows),
     )
 
 

@@ -101,7 +101,8 @@ def _x_of(value: float, ends: tuple[float, float], pixels: tuple[float, float]) 
 def _legend(content: ValueAxis) -> list[Sample]:
     found = []
     if content.windows:
-        found.append(Sample("every check clear", _clear_box(4.0, -5.0, 16.0, 10.0)))
+        words = "every check clear" if content.proven else "every check clear (not proven)"
+        found.append(Sample(words, _clear_box(4.0, -5.0, 16.0, 10.0)))
     found.append(Sample("some check not clear", _shut_box(4.0, -5.0, 16.0, 10.0)))
     line = Lines(np.array([[12.0, -6.0, 12.0, 6.0]]), Role.ACCENT, 2.4)
     found.append(Sample("today", (line,)))

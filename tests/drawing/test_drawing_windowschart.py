@@ -85,3 +85,8 @@ def test_values_are_read_off():
     assert replace(AXIS, unit="", per=1.0).text_of(1.5) == "× 1.5"
     (line,) = reading_line(chart, 3e8)
     assert line.segments[0][0] == pytest.approx(chart.x_of(3e8))
+
+
+def test_windows_without_proof_say_so():
+    chart = windows_chart(replace(AXIS, proven=False), 700.0, 160.0)
+    assert "every check clear (not proven)" in texts(chart)
