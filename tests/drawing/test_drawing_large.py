@@ -5,6 +5,7 @@ import pytest
 from conftest import body
 
 from modalview.drawing import geometry, outline
+from modalview.drawing.layout import _apart
 from modalview.drawing.sheet import sheet_geometry
 from modalview.model.parts import Model, Motion
 
@@ -37,3 +38,10 @@ def test_bodies_between_levels_stay_apart_from_their_neighbours(monkeypatch):
     low, high = boxes[:, None, :2], boxes[None, :, 2:]
     meet = ((low < high) & (boxes[None, :, :2] < boxes[:, None, 2:])).all(axis=2)
     assert meet.sum() == len(bodies)  # each only itself
+
+
+@pytest.mark.parametrize("twice", [True, False])
+def test_bodies_at_one_point_are_told_from_bodies_that_share_heights(twice):
+    centres = np.array([[x, y, 0.0] for x in (0.0, 1.0, 2.0) for y in (0.5, -0.5)])
+    centres[3] = centres[0] if twice else (1.0, 0.25, 0.0)
+    assert _apart(centres) is not twice
