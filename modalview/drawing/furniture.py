@@ -22,7 +22,8 @@ STRIP = 21.0  # height of the block as a strip of one line
 MOST_SHARE = 0.13  # of the sheet: a block that would take more is a strip
 PADDING = 14.0  # of a cell, both sides
 SWITCH = (212.0, 22.0)  # of the switch of the views, width and height
-SWITCH_LEFT, SWITCH_TOP = 92.0, 104.0  # where it stands: beside the axes, or below them
+SWITCH_LEFT = 92.0  # where it stands beside the axes
+SWITCH_TOP = (38.0, 66.0)  # or below them, whose arrows keep their length whatever the size of the text
 AXES = 60.0  # pixels that the axes keep beside the strip
 TURNING = "rotation about the shafts"
 TITLE_SHARE = (0.45, 0.68)  # of the block, for the left column: least and most
@@ -206,7 +207,7 @@ def switch_room(text_scale: float, room: float) -> tuple[float, float, float, fl
     wide, high = (side * text_scale for side in SWITCH)
     if SWITCH_LEFT * text_scale + wide < room:
         return SWITCH_LEFT * text_scale, 8.0, wide, high
-    return 8.0, SWITCH_TOP * text_scale, wide, high
+    return 8.0, SWITCH_TOP[0] + SWITCH_TOP[1] * text_scale, wide, high
 
 
 def captioned(drawing: Drawing, caption: str) -> Drawing:

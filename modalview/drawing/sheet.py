@@ -3,7 +3,7 @@
 import numpy as np
 
 from modalview.drawing.excitations import lines_above
-from modalview.drawing.furniture import MARGIN, TitleLines, sheet_of, title_lines, title_size
+from modalview.drawing.furniture import MARGIN, TitleLines, sheet_of, switch_room, title_lines, title_size
 from modalview.drawing.geometry import SheetGeometry, bare_geometry
 from modalview.drawing.layout import GROUND
 from modalview.drawing.lettering import lettered
@@ -38,6 +38,7 @@ ARROWS, SPARE = (
 LEAST_ARROWS = 0.22  # of the height of a low sheet
 # Of the sheet, what the model is fitted into at least: labels fall away before it shrinks.
 LEAST_WIDE, LEAST_HIGH = 0.6, 0.5
+MOST_ABOVE = 0.4  # of the height that the switch of the views may keep
 NEAR_LINK = 9.0  # pixels: how close to a link's line a click may be
 
 
@@ -64,10 +65,14 @@ def sheet_geometry(
         From where a space model is seen.
     """
     side = min(SIDE * text_scale, (1 - LEAST_WIDE) / 2 * width)
-    block = MARGIN + title_size(model.title, (width, height), text_scale)[1]
+    wide, high = title_size(model.title, (width, height), text_scale)
+    block = MARGIN + high
     arrows = (ARROWS if lines_above(model) else 8.0) + 17.0 * lines_above(model) * text_scale
     least = block + min(arrows - SPARE, LEAST_ARROWS * height) if lines_above(model) else block + 4.0
     top = min(block + arrows, max((1 - LEAST_HIGH) * height - BOTTOM, least))
+    if model.motion is Motion.SPACE:  # below the switch of the views, too
+        _, switch_top, _, switch_high = switch_room(text_scale, width - 2 * MARGIN - wide)
+        top = max(top, min(switch_top + switch_high + 8.0, MOST_ABOVE * height))
     area = (side, top, max(width - 2 * side, 40.0), max(height - top - BOTTOM, 40.0))
     return lettered(bare_geometry(model, (width, height), area, view or viewpoint, 1.0, text_scale))
 

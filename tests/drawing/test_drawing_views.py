@@ -6,7 +6,7 @@ import numpy as np
 import pytest
 
 from modalview.drawing.endon import sight_segments
-from modalview.drawing.furniture import axes
+from modalview.drawing.furniture import MARGIN, axes, switch_room, title_size
 from modalview.drawing.geometry import SheetGeometry
 from modalview.drawing.modepicture import mode_geometry, mode_picture
 from modalview.drawing.motion import frame, frozen, moved, pose
@@ -27,6 +27,7 @@ from modalview.model.parts import (
     Spring,
     Support,
 )
+from modalview.model.templates import TEMPLATES, build
 from modalview.model.values import Entry, Value
 from modalview.places import demo_models
 from modalview.store import open_model
@@ -275,3 +276,19 @@ def test_what_is_moved_keeps_its_depth_wherever_it_is_drawn_to():
     middle = geometry.points.rest[geometry.centres[0]]
     found = snapped(geometry, *middle, through=np.array([9.0, 1.25, 9.0]))
     assert found.world == pytest.approx([0.0, 1.25, 1.05])
+
+
+@pytest.mark.parametrize("view", Viewpoint)
+@pytest.mark.parametrize(
+    ("size", "text_scale"), [((595.0, 434.0), 1.0), ((660.0, 496.0), 1.5), ((900.0, 700.0), 2.0)]
+)
+def test_the_switch_of_the_views_stands_before_no_body(view, size, text_scale):
+    set_of_six = build(
+        next(one for one in TEMPLATES if one.title == "Machine on four, six or more mounts"), {"number": "6"}
+    )
+    geometry = sheet_geometry(set_of_six, *size, text_scale=text_scale, viewpoint=view)
+    room = size[0] - 2 * MARGIN - title_size(set_of_six.title, size, text_scale)[0]
+    x, y, wide, tall = switch_room(text_scale, room)
+    x1, y1, x2, _ = geometry.boxes[0]
+    assert y + tall <= y1 or x + wide <= x1 or x >= x2
+    assert geometry.boxes[0][3] - y1 > 0.15 * size[1]
