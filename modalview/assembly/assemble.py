@@ -225,7 +225,9 @@ def _structure(
         coordinates=coordinates,
         labels=old.labels if old and known else _labels(coordinates),
         stiffness=stiffness,
-        mass=terms_of_masses(model, coordinates, index, old.mass.form if old else None),
+        mass=old.mass.with_parameters(previous.parameters, parameters)
+        if previous and old and known
+        else terms_of_masses(model, coordinates, index, old.mass.form if old else None),
         damping=damping,
         rigid_body=rigid_body_motions(model, coordinates, stiffness.rows),
         links=links,

@@ -1,7 +1,7 @@
 """All terms of one kind as arrays: rows over the independent coordinates, factors, products of values."""
 
 from collections.abc import Mapping, Sequence
-from dataclasses import dataclass, field
+from dataclasses import dataclass, field, replace
 from functools import cached_property
 
 import numpy as np
@@ -60,6 +60,13 @@ class TermSet:
     def form(self) -> QuadraticForm:
         """The matrix of the terms, ready to be refilled."""
         return QuadraticForm(self.rows, self.like)
+
+    def with_parameters(self, old: Sequence[object], new: Sequence[object]) -> "TermSet":
+        """Return the same terms where other parameters came or went behind those that they use."""
+        if len(old) == len(new):
+            return self
+        product_of = np.where(self.product_of == len(old), len(new), self.product_of)
+        return replace(self, product_of=product_of, like=self.form)
 
     @cached_property
     def at_work(self) -> frozenset[str]:
@@ -131,6 +138,8 @@ def _without_rounding(forms: sp.csr_array, to_bodies: sp.csr_array) -> sp.csr_ar
     A spring between two bodies of one rigid cluster stretches by nothing; a rest of 1e-17 in its row would
     be taken for a direction of its own where rows are normalised.
     """
+    if not forms.nnz:
+        return sp.csr_array((forms.shape[0], to_bodies.shape[1]))
     rows, products = forms @ to_bodies, abs(forms) @ abs(to_bodies)
     meant = (abs(rows) - CANCELLED * products) > 0
     kept = sp.csr_array(rows.multiply(meant))

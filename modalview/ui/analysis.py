@@ -15,6 +15,7 @@ class Analysis(QObject):
 
     outlook_changed = Signal()
     doubts_changed = Signal()
+    verdict_known = Signal()  # while modes that may follow in a blink are awaited
     solution_changed = Signal()
     damped_changed = Signal()
     busy_changed = Signal()
@@ -119,7 +120,9 @@ class Analysis(QObject):
 
     def _take_outlook(self, outlook: Any) -> None:
         self.outlook, self.refusal, self.looking = outlook, None, False
-        if not self._patience.isActive():
+        if self._patience.isActive():
+            self.verdict_known.emit()
+        else:
             self.outlook_changed.emit()
 
     def _take_doubts(self, doubts: tuple[Any, ...]) -> None:

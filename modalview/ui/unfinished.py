@@ -73,6 +73,8 @@ def ungiven(model: Model | None, doubts: Sequence[Doubt]) -> str:
     if model is None:
         return ""
     parts = dict.fromkeys(part for one in doubts if one.rule == "starting value" for part in one.parts)
+    if not parts:
+        return ""
     called = {part.id: plain(part) for part in (*model.bodies, *model.links)}
     names = [called[part] for part in parts if part in called]
     return f"With starting values of {listed(names)} that nobody has given yet: " if names else ""

@@ -81,6 +81,7 @@ class Window(Frame):
         self.filing.saving.busy_changed.connect(self.show_reading)
         self._patience.timeout.connect(lambda: self._tell_reading(self._patience.property("what")))
         self.analysis.outlook_changed.connect(self.show_known)
+        self.analysis.verdict_known.connect(lambda: self.banner.show_analysis(self.analysis))
         self.analysis.doubts_changed.connect(self.results.show_doubts)
         self.analysis.doubts_changed.connect(lambda: self.banner.show_analysis(self.analysis))
         self.analysis.solution_changed.connect(self.show_modes)
@@ -204,9 +205,9 @@ class Window(Frame):
     def _show_model(self, *, anew: bool) -> None:
         model = self.document.model
         self.sheet.show_model(model, fit=anew)
+        self.analysis.follow(model)  # first, so that the study goes on while the rest is shown
         self.parts.show_model(model, anew=anew, system=self.system_of_units())
         self.results.show_model(model, self.system_of_units())
-        self.analysis.follow(model)
         self.charts.show_model(model, self.system_of_units(), anew=anew)
 
     def system_of_units(self) -> str:

@@ -111,3 +111,22 @@ def chain_text(bodies: int, seed: int = 1) -> str:
         ],
     }
     return json.dumps(document, indent=1)
+
+
+def braced_chain(bodies: int = 1000, links: int = 3000, seed: int = 3) -> Model:
+    """Return a chain along one axis whose bodies have springs to the next few, too."""
+    rng = np.random.default_rng(seed)
+    document = json.loads(chain_text(bodies))
+    for number in range(links - len(document["links"])):
+        first = int(rng.integers(0, bodies - 5))
+        document["links"].append(
+            {
+                "id": f"x{number}",
+                "kind": "spring",
+                "from": {"body": f"b{first}"},
+                "to": {"body": f"b{first + int(rng.integers(1, 5))}"},
+                "stiffness": f"{10 ** rng.uniform(5, 7):.4e} N/m",
+                "tolerance": "10 %",
+            }
+        )
+    return parse_model(json.dumps(document))

@@ -1,13 +1,15 @@
 """Counts of a band at nominal values, at some and at all values within tolerance."""
 
 import itertools
+from concurrent.futures import ThreadPoolExecutor
+from dataclasses import replace
 
 import numpy as np
 import pytest
 import scipy.sparse as sp
 
 from modalview.assembly.pencil import pencil_of_matrices, pencil_of_terms
-from modalview.bounds.bands import Cases, count_band
+from modalview.bounds.bands import Cases, Floating, Sharpened, count_band, count_band_by
 
 ROWS = sp.csr_array(np.array([[1.0, 0.0], [-1.0, 1.0], [0.0, 1.0]]))
 STIFFNESS, MASS = np.array([1000.0, 500.0, 2000.0]), np.array([5.0, 10.0])
@@ -105,3 +107,27 @@ def test_what_rounding_leaves_open_is_named():
     assert counted.inside is None
     assert counted.possible is None
     assert counted.undecided == ("nominal, at most 0.6 rad/s", "nominal, below 0.5 rad/s")
+
+
+def test_two_counts_at_once_find_what_one_after_the_other_finds():
+    alone = tolerance_cases().counters()
+    with ThreadPoolExecutor(1) as beside:
+        together = replace(tolerance_cases().counters(), beside=beside)
+        for band in ((1.0, 13.09), (13.0, 14.15), (13.0, 21.0), (15.21, 17.32)):
+            one, other = (count_band_by(counters, band, band) for counters in (alone, together))
+            assert one == other
+
+
+def test_a_sharper_counter_keeps_what_is_sharp_enough_and_counts_the_rest_anew():
+    rough = Floating(pencil().shifted, 0.5)
+    sharp = Sharpened(rough)
+    kept = rough.at_most(15.0)
+    assert sharp.at_most(15.0).number == kept.number == 1
+    moved = replace(kept, edge=1.2 * kept.edge, number=2)  # as if an edge had to move far
+    rough._made[15.0, "at most"] = moved
+    assert rough.at_most(15.0) is moved
+    found = sharp.at_most(15.0)
+    assert found.number == 1
+    assert abs(found.edge - 225.0) < 1e-6 * 225.0
+    rough._made[15.0, "below"] = replace(kept, number=None)
+    assert sharp.below(15.0).number == 1
