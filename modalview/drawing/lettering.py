@@ -154,8 +154,10 @@ def _name_bodies(geometry: SheetGeometry, board: Board, inner: Board, letters: _
         if geometry.text_scale > LARGE_TEXT and not _fits_in(geometry, board, number, whole):
             whole = title
         placed = _by_body(geometry, (board, inner), number, whole)
-        if not placed and len(whole) > 1:  # where there is no room the values fall away first
-            placed = _by_body(geometry, (board, inner), number, title)
+        if not placed and len(whole) > 1:  # where there is no room the values shrink, then fall away
+            small = (*title, *(replace(line, size=Size.SMALL) for line in whole[1:]))
+            placed = _by_body(geometry, (board, inner), number, small)
+            placed = placed or _by_body(geometry, (board, inner), number, title)
         if not placed and not many and len(geometry.model.bodies) <= CROWD:
             middle = geometry.boxes[number].reshape(2, 2).mean(axis=0)
             owner = _owner(geometry.boxes, number)

@@ -10,7 +10,7 @@ from modalview.drawing.furniture import MARGIN, axes, switch_room, title_size
 from modalview.drawing.geometry import SheetGeometry
 from modalview.drawing.modepicture import mode_geometry, mode_picture
 from modalview.drawing.motion import frame, frozen, moved, pose
-from modalview.drawing.primitives import Circles, Lines, Role, Text
+from modalview.drawing.primitives import Circles, Lines, Role, Size, Text
 from modalview.drawing.sheet import part_at, parts_at, sheet_drawing, sheet_geometry
 from modalview.drawing.snap import drawn_axes, hidden_axis, snapped, with_depth, world_at
 from modalview.drawing.view import STRAIGHT, Viewpoint, projection
@@ -292,3 +292,10 @@ def test_the_switch_of_the_views_stands_before_no_body(view, size, text_scale):
     x1, y1, x2, _ = geometry.boxes[0]
     assert y + tall <= y1 or x + wide <= x1 or x >= x2
     assert geometry.boxes[0][3] - y1 > 0.15 * size[1]
+
+
+def test_values_of_a_body_are_written_small_before_they_fall_away():
+    six = next(one for one in TEMPLATES if one.title == "Machine on four, six or more mounts")
+    geometry = sheet_geometry(build(six, {"number": "6"}), 595, 434)
+    told = {text.text: text.size for _, text in geometry.body_labels}
+    assert told == {"machine": Size.NORMAL, "3000 kg": Size.SMALL, "I 800, 3500, 3500 kg m2": Size.SMALL}
