@@ -94,11 +94,13 @@ def test_a_search_can_be_stopped_and_tells_how_far_it_is(parallel):
     assert all(0 <= share <= 1 for share in shares)
 
 
-def test_springs_that_are_alike_change_by_one_factor_too(parallel):
-    ids = [one.id for one in every_variable(base_of(parallel()).states[0].assembly)]
-    assert ids == ["m.mass", "a.stiffness", "b.stiffness", "a.stiffness+b.stiffness"]
-    different = base_of(parallel(other="201 N/mm")).states[0].assembly
-    assert "a.stiffness+b.stiffness" not in [one.id for one in every_variable(different)]
+def test_springs_that_are_alike_or_stand_on_the_ground_change_by_one_factor_too(parallel):
+    known = every_variable(base_of(parallel()).states[0].assembly)
+    assert [one.id for one in known] == ["m.mass", "a.stiffness", "b.stiffness", "a.stiffness+b.stiffness"]
+    assert known[-1].label == "stiffness of a and b"
+    different = every_variable(base_of(parallel(other="201 N/mm")).states[0].assembly)
+    assert different[-1].id == "a.stiffness+b.stiffness"
+    assert different[-1].label == "stiffness of all 2 links to ground"
 
 
 def test_values_that_are_not_there_are_refused_with_those_that_are(parallel):
@@ -248,3 +250,16 @@ def test_counts_at_all_factors_are_those_of_new_factorizations(parallel):
     sums, masses = 2e5 * (1 + factors[:, 0]), 100 * factors[:, 1]
     assert decided.all()
     assert numbers.tolist() == (sums / masses < gate.upper.omega**2).astype(int).tolist()
+
+
+def test_many_terms_are_counted_by_new_factorizations_and_few_by_a_small_matrix(parallel):
+    gate = gates_of(base_of(parallel()).states)[0]
+    chosen = variables_named(gate.state.assembly, ("a.stiffness+b.stiffness", "m.mass"))
+    factors = np.exp(np.random.default_rng(3).uniform(-3, 3, (40, 2)))
+    for edge in (gate.upper, gate.lower):
+        few, sure = edge.flexible(chosen).counts(factors)
+        many, also = edge._refactored(chosen).counts(factors)
+        assert sure.all()
+        assert also.all()
+        assert few.tolist() == many.tolist()
+        assert len(set(few.tolist())) == 2

@@ -93,7 +93,8 @@ def _finite(K: Array, M: Array) -> Array:
         across = none.T @ K @ heavy
         S = S - across.T @ np.linalg.pinv(none.T @ K @ none, rcond=NOTHING, hermitian=True) @ across
     values = np.linalg.eigvalsh((S + S.T) / 2) if S.size else np.zeros(0)
-    values[values < NOTHING * max(float(values.max(initial=0.0)), 0.0)] = 0.0
+    # What rounding of K, stiff massless parts included, leaves of motion that nothing resists.
+    values[values < NOTHING * np.abs(K).max() * float((heavy**2).sum(axis=0).max(initial=0.0))] = 0.0
     found: Array = values
     return found
 

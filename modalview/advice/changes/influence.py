@@ -47,16 +47,16 @@ def _moved(assembly: Assembly, case: Case, checks: Sequence[Check]) -> Iterable[
     if not squares.size:
         return ()
     values = values_at(assembly.parameters, case)
-    most = np.zeros(len(assembly.parameters))
+    most = np.zeros(len(assembly.parameters) + 1)  # the last one stands for the factor 1
     for terms, scale in ((assembly.structure.stiffness, squares), (assembly.structure.mass, None)):
         share = terms.values(values)[:, None] * np.asarray(terms.rows @ shapes) ** 2
         share = share / scale if scale is not None else share
-        for i in range(most.size):
-            own = (terms.product_of == i).any(axis=1)
-            if own.any():
-                most[i] = max(most[i], float(share[own].sum(axis=0).max()))
+        total = np.zeros((most.size, squares.size))
+        for factors in terms.product_of.T:
+            np.add.at(total, factors, share)
+        most = np.maximum(most, total.max(axis=1))
     return [
         (p.id, float(size * (p.high - p.low) / p.nominal))
-        for p, size in zip(assembly.parameters, most, strict=True)
+        for p, size in zip(assembly.parameters, most[:-1], strict=True)
         if p.family != "damping" and p.nominal
     ]

@@ -6,7 +6,7 @@ from dataclasses import dataclass
 import numpy as np
 import numpy.typing as npt
 
-from modalview.advice.changes.edges import Flexible, Gate
+from modalview.advice.changes.edges import Flexible, Gate, Refactored
 from modalview.advice.changes.values import Variable
 from modalview.assembly.parameters import Case
 
@@ -31,7 +31,7 @@ class Landscape:
 
     variables: tuple[Variable, ...]
     gates: tuple[Gate, ...]
-    counters: tuple[tuple[Flexible, Flexible], ...]
+    counters: tuple[tuple[Flexible | Refactored, Flexible | Refactored], ...]
 
     @property
     def stiffness(self) -> Bools:
@@ -94,5 +94,5 @@ class Landscape:
 
 def landscape(gates: Sequence[Gate], variables: Sequence[Variable]) -> Landscape:
     """Prepare the checks for the factors of some variables: one factorization for each edge."""
-    counters = tuple((gate.upper.flexible(variables), gate.lower.flexible(variables)) for gate in gates)
+    counters = tuple((gate.upper.counter(variables), gate.lower.counter(variables)) for gate in gates)
     return Landscape(tuple(variables), tuple(gates), counters)

@@ -9,9 +9,8 @@ from itertools import combinations
 import numpy as np
 import numpy.typing as npt
 
-from modalview.advice.changes.edges import Gate, gates_of
+from modalview.advice.changes.edges import Flexible, Gate, gates_of
 from modalview.advice.changes.influence import influence
-from modalview.advice.changes.landscape import Landscape, landscape
 from modalview.advice.changes.numbers import DOWN, UP, Written, rounded
 from modalview.advice.changes.options import Base, Told, Tried, option_of, tried
 from modalview.advice.changes.results import Kind, Narrowing, Option, ValueChange
@@ -89,9 +88,10 @@ class Question:
     cancelled: Callable[[], bool] = field(default=lambda: False)
 
     @cached_property
-    def whole(self) -> Landscape:
-        """All of the tolerances at once."""
-        return landscape(self.gates, [one.variable for one in self.alone])
+    def whole(self) -> tuple[tuple[Flexible, Flexible], ...]:
+        """Upper and lower edge of each check, as functions of all of the tolerances."""
+        every = [one.variable for one in self.alone]
+        return tuple((gate.upper.flexible(every), gate.lower.flexible(every)) for gate in self.gates)
 
     def clear(self, chosen: Sequence[int], share: Array) -> Bools:
         """Return whether the checks are clear when some tolerances, by number, are at shares (m, chosen)."""
@@ -103,7 +103,7 @@ class Question:
             for case in (Case.SOFT_HEAVY, Case.STIFF_LIGHT)
         )
         clear = np.ones(len(share), dtype=bool)
-        for upper, lower in self.whole.counters:
+        for upper, lower in self.whole:
             most, sure = upper.only(chosen).counts(soft)
             least, also = lower.only(chosen).counts(stiff)
             clear &= (most <= least) & sure & also

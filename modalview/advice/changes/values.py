@@ -2,7 +2,7 @@
 
 import math
 from collections.abc import Iterable, Iterator, Sequence
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 from itertools import groupby
 
 import numpy as np
@@ -71,7 +71,21 @@ def every_variable(assembly: Assembly) -> tuple[Variable, ...]:
     for alike in _alike(assembly.model, known):
         links = dict.fromkeys(p.part for p in alike)
         found.append(_variable(assembly, alike, "+".join(f"{link}.stiffness" for link in links)))
+    grounded = _grounded(assembly.model, known)
+    if grounded and all(set(one.members) != {p.id for p in grounded} for one in found):
+        links = dict.fromkeys(p.part for p in grounded)
+        whole = _variable(assembly, grounded, "+".join(f"{link}.stiffness" for link in links))
+        found.append(replace(whole, label=f"stiffness of all {len(links)} links to ground"))
     return tuple(found)
+
+
+def _grounded(model: Model, known: dict[str, Parameter]) -> tuple[Parameter, ...]:
+    """Return the values of all links that stand on supports; none where there are fewer than two."""
+    links = {
+        one.id for one in model.links if (one.from_.support or one.to.support) and not isinstance(one, Beam)
+    }
+    members = tuple(p for p in known.values() if p.part in links)
+    return members if len({p.part for p in members}) > 1 else ()
 
 
 def variables_named(assembly: Assembly, ids: Iterable[str]) -> tuple[Variable, ...]:
