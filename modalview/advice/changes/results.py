@@ -38,7 +38,7 @@ class Window:
 
     @property
     def text(self) -> str:
-        """Return "below 93.6 kN/mm", "271 kN/mm to 472 kN/mm", "above 4570 kN/mm" or "any value"."""
+        """Return "up to 94 kN/mm", "from 271 kN/mm to 472 kN/mm", "from 4573 kN/mm upward" or "any value"."""
         if not self.low_text and not self.high_text:
             return "any value"
         if not self.low_text:

@@ -10,7 +10,7 @@ import numpy as np
 from modalview.assembly.assemble import Assembly
 from modalview.assembly.parameters import Parameter
 from modalview.errors import InputError
-from modalview.model.addresses import Address, quantity_of
+from modalview.model.addresses import Address
 from modalview.model.parts import Beam, Body, Link, Model, Mount
 from modalview.model.rules_context import Context
 from modalview.model.rules_links import varied_quantity
@@ -233,11 +233,3 @@ def _limits(model: Model, parameter: Parameter) -> tuple[float, float]:
         read(low, quantity) / per if low is not None else 0.0,
         read(high, quantity) / per if high is not None else math.inf,
     )
-
-
-def quantity_text(model: Model, parameter: Parameter) -> str:
-    """Return the SI unit of a value; "1" for the factor of an inertia tensor."""
-    if parameter.entry is None:
-        return "1"
-    quantity = quantity_of(model, address_of(model, parameter))
-    return quantity.si_unit if quantity else "1"
