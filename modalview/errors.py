@@ -7,6 +7,7 @@ KeepclearError
         FaultsError           a list of faults, each with its place
             FileFaultsError   faults of a model file
             ModelFaultsError  faults of a model that reads well but cannot be analysed
+            RecipeFaultsError faults of the dimensions given to an entry of the handbook
         FileAccessError       a file cannot be read or written
             FileChangedError  it changed on disk since it was opened; nothing was written
     NumericalError            a computation could not reach what was asked
@@ -67,6 +68,10 @@ class FileFaultsError(FaultsError):
 
 class ModelFaultsError(FaultsError):
     """Faults of a model that reads well but cannot be analysed."""
+
+
+class RecipeFaultsError(FaultsError):
+    """Faults of the dimensions given to an entry of the handbook."""
 
 
 class FileAccessError(InputError):
