@@ -369,14 +369,18 @@ def _free_of_texts(
         return spots
     texts = [*letters.labels, *(text for _, text in letters.body_labels)]
     written = np.array([extent([text], geometry.text_scale) for text in texts]).reshape(-1, 4)
-    taken = np.vstack([written, geometry.boxes])
+    return _uncrossed(middle, spots, np.vstack([written, geometry.boxes])) or spots
+
+
+def _uncrossed(middle: Floats, spots: list[Spot], taken: Floats) -> list[Spot]:
+    """Keep the spots whose leader to a place crosses none of the rectangles (n, 4)."""
     ends = np.array([(spot.x, spot.y) for spot in spots])
     shares = np.linspace(0.05, 0.95, LEADER_MARKS)[:, None, None]
     marks = middle + shares * (ends - middle)
     x, y = marks[..., 0, None], marks[..., 1, None]
     crossed = (x > taken[:, 0]) & (x < taken[:, 2]) & (y > taken[:, 1]) & (y < taken[:, 3])
     free = np.flatnonzero(~np.asarray(crossed.any(axis=(0, 2))))
-    return [spots[number] for number in free.tolist()] or spots
+    return [spots[number] for number in free.tolist()]
 
 
 def _placed_beside(
@@ -428,7 +432,11 @@ def _beside(geometry: SheetGeometry, number: int) -> list[Spot]:
     if np.hypot(*(stop - start)) > SHORT:
         return spots
     low, high = np.minimum(start, stop), np.maximum(start, stop)
-    spots += round_about((low[0], low[1], high[0] - low[0], high[1] - low[1]), 14.0)
+    about = round_about((low[0], low[1], high[0] - low[0], high[1] - low[1]), 14.0)
+    if geometry.model.motion is not Motion.SPACE and len(geometry.model.bodies) <= CROWD:
+        # Past a body a text would seem to be that body's.
+        about = _uncrossed((start + stop) / 2, about, geometry.boxes)
+    spots += about
     for body in geometry.link_bodies[number]:
         if body == GROUND:
             continue

@@ -9,7 +9,8 @@ from modalview.drawing.labels import extent
 from modalview.drawing.lettering import USUAL
 from modalview.drawing.primitives import Box, Drawing, Lines, Role, Text
 from modalview.drawing.sheet import SheetGeometry, part_at, sheet_drawing, sheet_geometry
-from modalview.model.parts import Model
+from modalview.model.adding import add_body, add_link
+from modalview.model.parts import End, Model
 from modalview.places import demo_models
 from modalview.store.reading import read_model
 
@@ -228,3 +229,17 @@ def test_the_title_block_tells_the_motion_and_the_verdict(tower_model: Model):
     assert lines.motion == "single axis · 3 DOF"
     found = {text.text for text in texts(sheet_drawing(sheet_geometry(tower_model, 720, 540), lines))}
     assert {"tower", "mode in band", "single axis · 3 DOF"} <= found
+
+
+def test_no_text_of_a_link_stands_past_the_body_that_it_carries():
+    model = Model()
+    bodies = []
+    for place, size in (((-0.85, 0.55), (1.3, 0.5)), ((1.05, 0.55), (1.1, 0.5)), ((0.05, -0.4), (3.1, 0.4))):
+        model, body = add_body(model, "mass", place, size)
+        bodies.append(body)
+    motor, _, plate = (End(body=body) for body in bodies)
+    model, link = add_link(model, "spring", motor, plate)
+    view = replace(sheet_geometry(model, 595, 434).view, scale_x=100.0, scale_y=100.0, left=297.0, top=240.0)
+    geometry = sheet_geometry(model, 595, 434, view=view)
+    name = next(text for text in geometry.labels if text.text == link)
+    assert name.y > geometry.boxes[0][1]
