@@ -78,7 +78,7 @@ def _centres(model: Model, end_bodies: np.ndarray[tuple[int, int], np.dtype[np.i
 
 
 def _apart(centres: Floats) -> bool:
-    # By columns of plain numbers: to find unique rows numpy sorts records, and holds the interpreter meanwhile.
+    # Sorted as plain numbers: unique rows are found by sorting records, which holds the interpreter.
     ordered = centres[np.lexsort(centres.T)]
     return bool((ordered[1:] != ordered[:-1]).any(axis=1).all())
 
