@@ -1,6 +1,7 @@
 """Asks for a tuned absorber: on which body, along which direction, how heavy, with or without a damper."""
 
 from PySide6.QtCore import Signal
+from PySide6.QtGui import QShowEvent
 from PySide6.QtWidgets import (
     QCheckBox,
     QComboBox,
@@ -26,6 +27,7 @@ class AbsorberLine(QWidget):
 
     def __init__(self, parent: QWidget | None = None) -> None:
         super().__init__(parent)
+        self._model: Model | None = None  # not offered yet: a large one has many bodies
         self.body, self.direction = QComboBox(self), QComboBox(self)
         self.body.setAccessibleName("Body that the absorber sits on")
         self.body.setSizeAdjustPolicy(QComboBox.SizeAdjustPolicy.AdjustToMinimumContentsLengthWithIcon)
@@ -63,7 +65,20 @@ class AbsorberLine(QWidget):
         layout.addLayout(below)
 
     def show_model(self, model: Model) -> None:
-        """Offer the bodies and directions of a model; what is chosen stays where it is there."""
+        """Offer a model's bodies and directions once in sight; what is chosen stays where it is there."""
+        self._model = model
+        if self.isVisible():
+            self._offer_model()
+
+    def showEvent(self, event: QShowEvent) -> None:  # noqa: N802  (Qt's name)
+        """Offer what the model of today has."""
+        super().showEvent(event)
+        self._offer_model()
+
+    def _offer_model(self) -> None:
+        model, self._model = self._model, None
+        if model is None:
+            return
         known = FREEDOMS[model.motion]
         ways = known if model.motion is Motion.SHAFT_TRAIN else tuple(one for one in known if one in "xyz")
         bodies = [(one.name or one.id, one.id) for one in model.bodies]
