@@ -11,6 +11,7 @@ from modalview.errors import Fault, ModelFaultsError, UnitError
 from modalview.model.addresses import Address, field_named, look, put, shape_at
 from modalview.model.parts import Model
 from modalview.model.rules import faults
+from modalview.model.starting import with_mass
 from modalview.model.tolerance_text import tolerance_text, typed_entry, typed_tolerance
 from modalview.model.values import STARTING, Entry, Tolerance, Value
 from modalview.units.numbers import read_number, split_number
@@ -83,7 +84,8 @@ def set_value_text(model: Model, address: Address, text: str) -> SetField:
     """Return the edit that types a value anew, by the window's rule (a decimal comma is accepted).
 
     Tolerance, source and status of the value stay, but for those of a starting value; ``by`` and ``given``
-    go, for the number no longer comes from there. An empty text takes an optional value away.
+    go, for the number no longer comes from there. An empty text takes an optional value away. With the mass
+    of a body goes its inertia, while that is a starting value.
 
     Raises
     ------
@@ -108,7 +110,13 @@ def set_value_text(model: Model, address: Address, text: str) -> SetField:
         return set_field(model, address, _emptied(model, address), f"Clear {_named(address)}")
     entry = typed_entry(text, quantity)
     new = retyped(old if isinstance(old, Value) else None, entry) if shape.value else entry
-    return set_field(model, address, new, f"Set {_named(address)} to {entry.text}")
+    told = f"Set {_named(address)} to {entry.text}"
+    if isinstance(new, Value) and len(address) == 3 and address[2] == "mass":
+        body = look(model, address[:2])
+        heavier = with_mass(body, new, model.units or "SI")
+        if heavier.inertia != body.inertia:
+            return set_field(model, address[:2], heavier, told)
+    return set_field(model, address, new, told)
 
 
 def retyped(old: Value | None, entry: Entry) -> Value:

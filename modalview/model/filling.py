@@ -14,7 +14,8 @@ from modalview.model.composites import is_composite, read_composite
 from modalview.model.differences import Rewrite, checked_edit
 from modalview.model.edits import retyped, typed_number
 from modalview.model.fields import Field, Shape, fields_of, quantity_in
-from modalview.model.parts import Model, Motion
+from modalview.model.parts import Body, Model, Motion
+from modalview.model.starting import with_mass
 from modalview.model.tolerance_text import typed_entry, typed_tolerance
 from modalview.model.values import Entry, Tolerance, Value
 from modalview.units.quantities import Quantity
@@ -62,7 +63,11 @@ def filled(model: Model, typed: Typed) -> Model:
     for address, text in typed:
         place = place_at(changed, address)
         if place.owner is not None:
-            changed = put(changed, address, _item(changed, place, address, text))
+            item = _item(changed, place, address, text)
+            if isinstance(place.owner, Body) and address[-1] == "mass" and isinstance(item, Value):
+                changed = put(changed, address[:-1], with_mass(place.owner, item, model.units or "SI"))
+            else:
+                changed = put(changed, address, item)
         elif text.strip():
             made.setdefault(address[:-1], {})[address[-1]] = _item(changed, place, address, text)
     for address, items in made.items():

@@ -7,6 +7,7 @@ from hypothesis import given, settings
 from hypothesis import strategies as st
 
 from modalview.errors import InputError, ModelFaultsError, UnitError
+from modalview.model.adding import add_body
 from modalview.model.addresses import look, quantity_of
 from modalview.model.editable import editable_fields
 from modalview.model.edits import (
@@ -18,9 +19,9 @@ from modalview.model.edits import (
     set_typed,
     set_value_text,
 )
-from modalview.model.parts import Margin, Motion
+from modalview.model.parts import Margin, Model, Motion
 from modalview.model.rules import faults
-from modalview.model.values import Entry, Value
+from modalview.model.values import STARTING, Entry, Value
 from modalview.store import dump_model, parse_model, read_model
 from modalview.units import quantities as q
 
@@ -274,3 +275,31 @@ def test_undo_all_then_redo_all_gives_equal_models(data):
 
 def test_every_motion_is_tried():
     assert {model.motion for model in MODELS.values()} == set(Motion)
+
+
+@pytest.mark.parametrize("motion", [Motion.PLANE, Motion.SPACE])
+def test_an_inertia_that_nobody_gave_goes_with_the_mass_and_back_by_undo(motion):
+    model, body = add_body(
+        Model(motion=motion), "body", (0.0,) * (3 if motion is Motion.SPACE else 2), (2.0, 0.7)
+    )
+    edit = set_typed(model, ("bodies", body, "mass"), "250 kg")
+    after = edit.apply(model)
+
+    def moments(one):
+        inertia = one.bodies[0].inertia
+        return [inertia] if motion is Motion.PLANE else [inertia.Ixx, inertia.Iyy, inertia.Izz]
+
+    for new, old in zip(moments(after), moments(model), strict=True):
+        assert new.si == pytest.approx(2.5 * old.si, rel=1e-3)
+        assert new.source == STARTING
+    assert after.bodies[0].mass.source is None
+    assert edit.text == f"Set mass of {body} to 250 kg"
+    assert edit.revert(after) == model
+
+
+def test_an_inertia_that_somebody_gave_stays_when_the_mass_is_typed():
+    model, body = add_body(Model(motion=Motion.PLANE), "body", (0.0, 0.0), (2.0, 0.7))
+    model = set_typed(model, ("bodies", body, "inertia"), "40 kg m2").apply(model)
+    edit = set_typed(model, ("bodies", body, "mass"), "250 kg")
+    assert edit.address == ("bodies", body, "mass")
+    assert edit.apply(model).bodies[0].inertia.text == "40 kg m2"

@@ -169,3 +169,16 @@ def test_a_composite_is_read_and_written(part, name, text, written):
 def test_a_composite_is_refused_with_the_way_it_is_written(part, name, text, words):
     with pytest.raises(UnitError, match=words):
         read_composite(part, name, text)
+
+
+def test_with_a_mass_typed_in_a_form_goes_the_inertia_that_nobody_gave():
+    drawn = Value(Entry("37.5 kg m2", 37.5), source=STARTING)
+    model = Model(
+        motion=Motion.PLANE,
+        bodies=(
+            Body(id="b", mass=Value.typed("100 kg", q.MASS), inertia=drawn, position=GROUND.position[:2]),
+        ),
+    )
+    edit = typed_together(model, [(("bodies", "b", "mass"), "250 kg")], "Set mass")
+    assert edit.apply(model).bodies[0].inertia.si == pytest.approx(93.75, rel=1e-3)
+    assert edit.apply(model).bodies[0].mass.text == "250 kg"
