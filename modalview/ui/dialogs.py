@@ -66,6 +66,7 @@ class TextDialog(QDialog):
         buttons = QDialogButtonBox(QDialogButtonBox.StandardButton.Close, self)
         copy = buttons.addButton("Copy text", QDialogButtonBox.ButtonRole.ActionRole)
         copy.clicked.connect(lambda: QGuiApplication.clipboard().setText(text))
+        buttons.button(QDialogButtonBox.StandardButton.Close).setDefault(True)  # Enter closes
         buttons.rejected.connect(self.close)
         layout = QVBoxLayout(self)
         layout.addWidget(words)
