@@ -8,7 +8,7 @@ import sys
 from collections.abc import Sequence
 from pathlib import Path
 
-COMMANDS = ("bounds", "modes", "check", "import", "picture")
+COMMANDS = ("bounds", "modes", "check", "values", "import", "picture")
 HELP = ("-h", "--help", "--version")
 _NO_SCREEN = """\
 keepclear: there is no screen here to open a window on.
@@ -17,6 +17,7 @@ These commands work without one:
   keepclear modes FILE                  the natural frequencies, with tolerance ranges
   keepclear check FILE...               is every speed and order clear of every mode
   keepclear picture FILE -o out.png     the sheet, a mode, the scale or the complex plane as a picture
+  keepclear values                      stiffness, mass, inertia and orders from dimensions
   keepclear import ... -o FILE          make a model of a table of nodes and a table of springs
 """
 

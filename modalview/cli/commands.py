@@ -15,6 +15,7 @@ from modalview.cli import (
     speeds,
     texts,
     tune,
+    values,
     vary,
 )
 from modalview.cli.damped import damped_document, damped_text
@@ -175,6 +176,7 @@ COMMANDS: dict[str, tuple[str, Prepare]] = {
     "mounts": ("tell what every spring and mount carries at rest", mounts.prepare),
     "tune": ("tune chosen values to measured peaks, and tell what the peaks cannot tell", tune.prepare),
     "vary": ("vary one or two values, or draw all at random within their tolerances", vary.prepare),
+    "values": ("make stiffness, mass, inertia and orders from dimensions, with their source", values.prepare),
     "import": ("make a model file of a table of nodes and a table of springs", imports.prepare),
     "picture": ("draw the sheet, a mode, the scale or the complex plane, without a screen", _prepare_picture),
 }

@@ -49,7 +49,21 @@ _FITS = (less("ball", "pitch", "a ball must be smaller than the pitch diameter")
 _USUAL = (within(lambda s: s["ball"] / s["pitch"], 0.02, 0.5, "d/Dp"),)
 
 RECIPES = tuple(
-    Recipe(name, title, sentence, asks, q.RATIO, compute, formula, _ROLLING, _HARRIS, "2 %", _FITS, _USUAL)
+    Recipe(
+        name,
+        title,
+        sentence,
+        asks,
+        q.RATIO,
+        compute,
+        formula,
+        _ROLLING,
+        _HARRIS,
+        "2 %",
+        _FITS,
+        _USUAL,
+        written="order",
+    )
     for name, title, sentence, asks, compute, formula in (
         (
             "bearing-cage",

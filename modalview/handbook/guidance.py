@@ -156,7 +156,7 @@ RECIPES = (
         "an older form of one rule for compressors; of the speed, not of the mode",
         _API,
         remarks=(CHECK,),
-        percent=True,
+        written="percent",
     ),
     Recipe(
         "margin-above",
@@ -169,7 +169,7 @@ RECIPES = (
         "an older form of one rule for compressors; of the speed, not of the mode",
         _API,
         remarks=(CHECK,),
-        percent=True,
+        written="percent",
     ),
     Recipe(
         "damping-ratio",
@@ -182,6 +182,6 @@ RECIPES = (
         "for plausibility: the range is wide; measure where the response matters",
         PRACTICE,
         doubts=(_damping_range,),
-        percent=True,
+        written="percent",
     ),
 )

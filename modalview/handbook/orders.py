@@ -120,6 +120,7 @@ PASSING = tuple(
         "order = h z",
         holds,
         PRACTICE,
+        written="order",
     )
     for name, title, sentence, what, example, holds in (
         (
@@ -234,6 +235,7 @@ DRIVES = (
         "order = z1/z2",
         "gears: exact; belts slip by 1 to 2 %, toothed ones do not",
         Source("equal speed at the pitch line", "definition"),
+        written="order",
     ),
     Recipe(
         "order-belt",
@@ -255,6 +257,7 @@ DRIVES = (
                 "" if math.pi * s["diameter"] < s["length"] else "a belt is longer than round its pulley"
             ),
         ),
+        written="order",
     ),
     Recipe(
         "order-firing",
@@ -267,6 +270,7 @@ DRIVES = (
         "even firing; a misfire and uneven cranks bring every half order: keep those in the check",
         _ENGINE,
         refusals=(_cycle,),
+        written="order",
     ),
     Recipe(
         "order-gas",
@@ -279,6 +283,7 @@ DRIVES = (
         "orders that cancel on a rigid crank do excite a twisting one: keep all half orders",
         _ENGINE,
         refusals=(_cycle,),
+        written="order",
     ),
     Recipe(
         "order-inertia",
@@ -290,6 +295,7 @@ DRIVES = (
         "order = h",
         "they repeat every turn; which cancel depends on the cranks",
         _ENGINE,
+        written="order",
     ),
     Recipe(
         "order-universal-joint",
@@ -301,6 +307,7 @@ DRIVES = (
         "order = 2 h",
         "one cross joint; two joints in one plane with equal angles cancel it at the ends, not between",
         PRACTICE,
+        written="order",
     ),
     Recipe(
         "universal-joint-swing",

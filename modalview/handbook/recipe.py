@@ -4,7 +4,7 @@ import math
 from collections.abc import Callable, Mapping
 from dataclasses import dataclass
 from difflib import get_close_matches
-from typing import Any
+from typing import Any, Literal
 
 from modalview.errors import Fault, RecipeFaultsError, UnitError
 from modalview.units import quantities as q
@@ -21,6 +21,7 @@ BETWEEN = ";"
 _HZ = 2 * math.pi
 
 Sizes = Mapping[str, Any]
+Written = Literal["value", "percent", "order"]
 # Says what is wrong with sizes, or "".
 Check = Callable[[Sizes], str]
 
@@ -151,8 +152,8 @@ class Recipe:
         What makes it impossible; what leaves the range of validity and is told.
     remarks : tuple of str
         Told with every value.
-    percent : bool
-        Whether a ratio is written in per cent.
+    written : str
+        How a result without unit is written: "value", "percent", or "order" for the bare number of an order.
     """
 
     id: str
@@ -168,7 +169,7 @@ class Recipe:
     refusals: tuple[Check, ...] = ()
     doubts: tuple[Check, ...] = ()
     remarks: tuple[str, ...] = ()
-    percent: bool = False
+    written: Written = "value"
 
     def evaluate(self, texts: Mapping[str, str], *, window: bool = False) -> Made:
         """Make the value from typed dimensions.
@@ -195,9 +196,9 @@ class Recipe:
         self._refuse(tuple(Fault("", told) for check in self.refusals if (told := check(sizes))))
         si = self._computed(sizes)
         notes += [told for check in self.doubts if (told := check(sizes))]
-        source = f"handbook: {self.title}, {self.formula} ({self.source.citation}; {self.source.status})"
+        source = f"{self.title} from dimensions: {self.source.citation} ({self.source.status})"
         return Made(
-            show(si, self.result, digits=DIGITS) if self.percent else value_text(si, self.result),
+            value_text(si, self.result, percent=self.written == "percent"),
             si,
             self.result,
             self.tolerance,
@@ -223,13 +224,13 @@ class Recipe:
             raise RecipeFaultsError(tuple(Fault(one.path or self.title, one.reason) for one in faults))
 
 
-def value_text(si: float, quantity: Quantity) -> str:
+def value_text(si: float, quantity: Quantity, *, percent: bool = False) -> str:
     """Return a value as it is handed over: at most six digits, read back by ``units``.
 
     >>> value_text(40000.0, q.STIFFNESS), value_text(7.0, q.RATIO), value_text(1084.9, q.FREQUENCY)
     ('40 N/mm', '7', '172.667 Hz')
     """
-    if quantity == q.RATIO:
+    if quantity == q.RATIO and not percent:
         return short(si, DIGITS)
     if quantity == q.FREQUENCY:
         return f"{short(si / _HZ, DIGITS)} Hz"

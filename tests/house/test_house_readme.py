@@ -30,6 +30,7 @@ def test_readme_shows_output():
         "changes",
         "tune",
         "vary",
+        "values",
     ]
 
 
@@ -118,6 +119,9 @@ BAND = ("--frequencies", "1 Hz", "--margin", "3 %")
         ("vary", *PUMP, "--value", "k3"),
         ("vary", *PUMP, "--samples", "9", "--response"),
         *(("changes", file) for file in (*PUMP, *RETROFIT)),
+        ("values",),
+        ("values", "shaft-hollow"),
+        ("values", "cable-middle", "--tension", "500 N", "--length", "1.6 m"),
         *(("response", file) for file in (*PUMP, *TRAIN, *RETROFIT)),
     ],
 )
@@ -141,6 +145,7 @@ def _keys(item):
             "tilt_rad",
             "motion_real",
             "motion_imag",
+            "given",
         }:
             yield from _keys(inner)
     for one in item if isinstance(item, list) else ():
