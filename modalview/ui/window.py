@@ -4,7 +4,7 @@ from pathlib import Path
 from typing import TYPE_CHECKING, Any
 
 from PySide6.QtCore import QEvent, Qt, QTimer, Signal
-from PySide6.QtGui import QCloseEvent, QDragEnterEvent, QDropEvent
+from PySide6.QtGui import QCloseEvent, QDragEnterEvent, QDropEvent, QKeyEvent
 
 from modalview.model.parts import Model
 from modalview.ui import settings as names
@@ -448,6 +448,12 @@ class Window(Frame):
         super().changeEvent(event)
         if event.type() == QEvent.Type.ActivationChange and self.isActiveWindow():
             self.watch.look()
+
+    def keyPressEvent(self, event: QKeyEvent) -> None:  # noqa: N802  (Qt's name)
+        """Let Esc put a tool away wherever the keyboard is."""
+        hand = self.sketching.hand
+        if event.key() != Qt.Key.Key_Escape or not hand.ready or not hand.escape():
+            super().keyPressEvent(event)
 
     def closeEvent(self, event: QCloseEvent) -> None:  # noqa: N802  (Qt's name)
         """Ask about unsaved changes; then let the thread end."""

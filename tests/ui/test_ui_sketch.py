@@ -6,6 +6,7 @@ from conftest import FAN, settle
 from pen import Pen
 from PySide6.QtCore import QPoint, Qt
 from PySide6.QtGui import QGuiApplication
+from PySide6.QtTest import QTest
 from PySide6.QtWidgets import QApplication
 
 from modalview.drawing.overlay import note_items
@@ -243,6 +244,14 @@ def test_a_body_is_moved_by_dragging_and_takes_one_step_to_undo(sketch):
     assert place(model(sketch).bodies[0]) == pytest.approx([-1.0, 2.0])
     sketch.window.document.stack.undo()
     assert model(sketch) == before
+
+
+def test_escape_puts_a_tool_away_while_the_keyboard_is_on_another_place(pump):
+    pump.activateWindow()
+    pump.sketching.hand.take("spring")
+    pump.modes.row.setFocus()
+    QTest.keyClick(pump.modes.row, Qt.Key.Key_Escape)
+    assert pump.sketching.hand.kind.name == "choose"
 
 
 def test_escape_gives_back_what_was_dragged(sketch):

@@ -435,7 +435,7 @@ class Hand(QObject):
         if key in _STEPS:
             return self.ready and self._step(_STEPS[key], times)
         do = {
-            Qt.Key.Key_Escape: self._escape,
+            Qt.Key.Key_Escape: self.escape,
             Qt.Key.Key_PageDown: lambda: self._hop(1),
             Qt.Key.Key_PageUp: lambda: self._hop(-1),
             Qt.Key.Key_Return: self._enter,
@@ -456,7 +456,8 @@ class Hand(QObject):
         self.take(tool.name, locked=keep)
         return True
 
-    def _escape(self) -> bool:
+    def escape(self) -> bool:
+        """Leave off what is begun, else put the tool away, else choose nothing; tell whether there was any."""
         if self.leave_off():
             return True
         if self.kind.name != "choose":
