@@ -457,7 +457,7 @@ class Hand(QObject):
         return True
 
     def escape(self) -> bool:
-        """Leave off what is begun, else put the tool away, else choose nothing; tell whether there was any."""
+        """Leave off what is begun, else put the tool away, else choose nothing; tell whether it did."""
         if self.leave_off():
             return True
         if self.kind.name != "choose":
