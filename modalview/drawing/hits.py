@@ -122,6 +122,12 @@ def within(geometry: SheetGeometry, band: tuple[float, float, float, float]) -> 
     return tuple(dict.fromkeys(ids))
 
 
+def frames_of(geometry: SheetGeometry, parts: frozenset[str]) -> Floats:
+    """Return x1, y1, x2, y2 about those bodies among some parts (n, 4)."""
+    chosen = [number for number, body in enumerate(geometry.model.bodies) if body.id in parts]
+    return np.asarray(geometry.boxes[np.array(chosen, dtype=int)])
+
+
 def frame_of(geometry: SheetGeometry, part: str) -> Floats | None:
     """Return x1, y1, x2, y2 about a body, link or support on the sheet; None where it is not drawn."""
     for number, body in enumerate(geometry.model.bodies):

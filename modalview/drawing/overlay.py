@@ -4,7 +4,7 @@ import numpy as np
 
 from modalview.drawing.geometry import SheetGeometry
 from modalview.drawing.hits import HANDLE, frame_of, handles
-from modalview.drawing.primitives import Anchor, Box, Circles, Item, Lines, Role, Size, Text
+from modalview.drawing.primitives import Anchor, Box, Circles, Floats, Item, Lines, Role, Size, Text
 from modalview.drawing.snap import Snapped
 from modalview.drawing.symbols import TEMPLATES, Symbol, between, dashed, ground, outline
 from modalview.drawing.textsize import line_height, text_width
@@ -25,6 +25,14 @@ def chosen_items(geometry: SheetGeometry, chosen: tuple[str, ...]) -> tuple[Item
         x, y = grip.x - _GRIP / 2, grip.y - _GRIP / 2
         items.append(Box(x, y, _GRIP, _GRIP, 1.5, Role.ACCENT, Role.PAPER, 1.4))
     return tuple(items)
+
+
+def carried_items(frames: Floats, across: float, down: float) -> tuple[Item, ...]:
+    """Return the frames of parts (n, 4) as far away as the pointer carries them."""
+    return tuple(
+        Box(x1 + across, y1 + down, x2 - x1, y2 - y1, 2.0, Role.ACCENT, None, 1.2)
+        for x1, y1, x2, y2 in frames.tolist()
+    )
 
 
 def band_items(start: tuple[float, float], stop: tuple[float, float]) -> tuple[Item, ...]:

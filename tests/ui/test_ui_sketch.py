@@ -10,7 +10,7 @@ from PySide6.QtTest import QTest
 from PySide6.QtWidgets import QApplication
 
 from modalview.drawing.overlay import note_items
-from modalview.drawing.primitives import Lines
+from modalview.drawing.primitives import Box, Lines
 from modalview.model.parts import Model, Motion
 from modalview.model.values import STARTING
 from modalview.ui import settings as names
@@ -244,6 +244,22 @@ def test_a_body_is_moved_by_dragging_and_takes_one_step_to_undo(sketch):
     assert place(model(sketch).bodies[0]) == pytest.approx([-1.0, 2.0])
     sketch.window.document.stack.undo()
     assert model(sketch) == before
+
+
+def test_what_is_dragged_follows_the_pointer_while_the_sheet_is_still_to_be_laid_out(sketch, monkeypatch):
+    two_masses(sketch)
+    start = sketch.part("left")
+    x1, y1, x2, y2 = sketch.laid_out().boxes[0].tolist()
+    monkeypatch.setattr(sketch.sheet, "draw_now", lambda: None)
+    sketch.drag(start, start + QPoint(0, -100), let_go=False)
+    hand = sketch.window.sketching.hand
+    assert sketch.sheet.geometry.model is not model(sketch)
+    went = hand.tool._work._at.y - hand.tool._work._from[1]
+    boxes = [item for item in hand.items() if isinstance(item, Box)]
+    assert went < -60
+    assert any((box.x, box.y, box.width, box.height) == (x1, y1 + went, x2 - x1, y2 - y1) for box in boxes)
+    monkeypatch.undo()
+    sketch.let_go(start + QPoint(0, -100))
 
 
 def test_escape_puts_a_tool_away_while_the_keyboard_is_on_another_place(pump):

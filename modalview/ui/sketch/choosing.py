@@ -162,6 +162,7 @@ class Move(Tool):
         self._leave_out = frozenset(hand.chosen)
         self._at: Any = None
         self._typed: dict[str, float] = {}
+        self._frames = hits.frames_of(self._geometry, self._leave_out)
 
     def drag(self, at: Pointer) -> None:
         """Move as far as the pointer is drawn."""
@@ -220,10 +221,14 @@ class Move(Tool):
         return (self._at.what,) if self._at is not None and self._at.what not in ("", "grid") else ()
 
     def items(self) -> tuple[Any, ...]:
-        """Alignments."""
+        """Alignments, and where the bodies are while the sheet has still to be laid out with them there."""
         from modalview.drawing import overlay  # noqa: PLC0415  (numpy comes after the first paint)
 
-        return overlay.hint_items(self._at)
+        hints = overlay.hint_items(self._at)
+        if self._at is None or self._typed or self.hand.geometry.model is self.hand.model:
+            return hints
+        step = self._at.x - self._from[0], self._at.y - self._from[1]
+        return *overlay.carried_items(self._frames, *step), *hints
 
 
 class Slide(Move):
