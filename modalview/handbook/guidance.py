@@ -178,7 +178,7 @@ RECIPES = (
         (word("structure", "kind of structure", tuple(DAMPING)),),
         q.RATIO,
         damping,
-        "middle of a range",
+        "sqrt(lowest * highest)",
         "for plausibility: the range is wide; measure where the response matters",
         PRACTICE,
         doubts=(_damping_range,),

@@ -96,11 +96,11 @@ RECIPES = (
         "stepped shaft in torsion",
         "Torsional stiffness of pieces of different diameters one after another.",
         (
-            several("outer", "outer diameters D1; D2; ...", q.LENGTH, "300 mm; 250 mm"),
+            several("outer", "outer diameter D of each piece", q.LENGTH, "300 mm; 250 mm"),
             several(
-                "inner", "inner diameters d1; d2; ... (0 mm: solid)", q.LENGTH, "200 mm; 150 mm", zero=True
+                "inner", "inner diameter d of each piece (0 mm: solid)", q.LENGTH, "200 mm; 150 mm", zero=True
             ),
-            several("length", "lengths L1; L2; ...", q.LENGTH, "2 m; 3 m"),
+            several("length", "length L of each piece", q.LENGTH, "2 m; 3 m"),
             shear(),
         ),
         q.TORSIONAL_STIFFNESS,
