@@ -81,11 +81,29 @@ def lettered(geometry: SheetGeometry) -> SheetGeometry:
     )
 
 
-def _taken(geometry: SheetGeometry) -> Floats:
-    """Return the rectangles that texts outside of bodies keep clear of."""
+def arrows_in_the_way(geometry: SheetGeometry) -> bool:
+    """Tell whether an excitation's arrow crosses the title block, or leaves a sheet that holds its body."""
+    left, _, _, below = _corner(geometry)
+    for body, segments in geometry.body_arrows:
+        x1, y1, x2, y2 = geometry.boxes[body].tolist()
+        if min(x1, y1) < 0 or x2 > geometry.width or y2 > geometry.height:
+            continue  # zoomed in: somebody looks at something else
+        x, y = segments.reshape(-1, 2).T
+        if (y < 0).any() or ((x > left) & (y < below)).any():
+            return True
+    return False
+
+
+def _corner(geometry: SheetGeometry) -> list[float]:
+    """Return x1, y1, x2, y2 of the title block with some room about it."""
     sheet = (geometry.width, geometry.height)
     width, height = title_size(geometry.model.title, sheet, geometry.text_scale)
-    corner = [geometry.width - MARGIN - width - 4, 0.0, geometry.width, MARGIN + height + 4]
+    return [geometry.width - MARGIN - width - 4, 0.0, geometry.width, MARGIN + height + 4]
+
+
+def _taken(geometry: SheetGeometry) -> Floats:
+    """Return the rectangles that texts outside of bodies keep clear of."""
+    corner = _corner(geometry)
     arrows = axes(geometry.model.motion, geometry.text_scale, corner[0], geometry.view.viewpoint)[1]
     taken = [np.array([corner]), arrows, geometry.boxes]
     taken += [_link_boxes(geometry)[0], _foot_boxes(geometry)]

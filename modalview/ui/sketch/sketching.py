@@ -3,7 +3,7 @@
 from dataclasses import replace
 from typing import Any
 
-from PySide6.QtCore import QObject, QRect
+from PySide6.QtCore import QObject, QRect, QTimer
 
 from modalview.model.removing import without
 from modalview.ui.sketch.asking import AskText
@@ -31,6 +31,7 @@ class Sketching(QObject):
         self.hand.editing = self.editing
         self.hand.units = window.system_of_units
         self._awaited: tuple[tuple[str, ...], bool] | None = None  # parts whose form waits for the sheet
+        self._arrow_added = False
         self._connect()
 
     def _connect(self) -> None:
@@ -49,6 +50,7 @@ class Sketching(QObject):
         hand.title_asked.connect(self.ask_title)
         hand.form_asked.connect(lambda parts: self._ask_values(parts, fresh=False))
         window.parts.part_chosen.connect(self._on_part_of_table)
+        self.force.made.connect(self._on_made)
         window.results.force_asked.connect(self.add_force)
         window.results.change_asked.connect(self.change_machine)
         window.results.removal_asked.connect(self.remove_machine)
@@ -130,7 +132,9 @@ class Sketching(QObject):
             self._on_laid_out()
 
     def _on_laid_out(self) -> None:
-        """Show the form that waited for its part to be on the sheet."""
+        """Show the form that waited for its part to be on the sheet, and make room for an arrow."""
+        if self._arrow_added:
+            QTimer.singleShot(0, self, self._make_room)
         if self._awaited is None or self.hand.geometry.model is not self._window.document.model:
             return
         (parts, fresh), self._awaited = self._awaited, None
@@ -143,6 +147,22 @@ class Sketching(QObject):
         """Ask what acts at a place on a body."""
         self.form.hide_form()
         self.force.show_at(body, place, self.hand.rectangle((body,)), system=self._window.system_of_units())
+
+    def _on_made(self) -> None:
+        self._arrow_added = True
+        if self._window.sheet.settled:
+            self._make_room()
+
+    def _make_room(self) -> None:
+        """Fit the sheet anew where an arrow that was just added has no room above its body."""
+        from modalview.drawing.lettering import arrows_in_the_way  # noqa: PLC0415  (numpy is late)
+
+        geometry = self._window.sheet.geometry
+        if not self._arrow_added or geometry is None or geometry.model is not self._window.document.model:
+            return
+        self._arrow_added = False
+        if arrows_in_the_way(geometry):
+            self._window.sheet.fit()
 
     def add_force(self) -> None:
         """Ask what acts on the chosen body, or on the first: the way of the keyboard and of the results."""
