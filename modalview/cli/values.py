@@ -18,11 +18,12 @@ JSON_HELP = "print JSON: SI, with the unit beside"
 
 def prepare(parser: argparse.ArgumentParser) -> None:
     """Declare the words of the command; those of an entry are known once it is named."""
+    parser.usage = f'{parser.prog} [-h] [--json] [ENTRY [--SIZE "VALUE" ...]]'
     parser.add_argument("--json", action="store_true", help=JSON_HELP)
     parser.add_argument(
         "words",
         nargs=argparse.REMAINDER,
-        metavar="ENTRY --SIZE VALUE ...",
+        metavar="ENTRY",
         help="an entry and its sizes; an entry alone tells what it asks for, no entry lists them all",
     )
     parser.set_defaults(run=partial(run, parser))
@@ -35,7 +36,7 @@ def run(parser: argparse.ArgumentParser, words: argparse.Namespace) -> int:
         return OK
     entry = recipe(words.words[0])
     sizes = _sizes(parser, entry, words.words[1:])
-    as_json = words.json or sizes.pop("json")
+    as_json = sizes.pop("json") or words.json
     texts = {name: text for name, text in sizes.items() if text is not None}
     if not texts:
         _tell(entry_document(entry) if as_json else entry_text(entry))
@@ -94,9 +95,10 @@ def list_text() -> str:
 def entry_text(entry: Recipe) -> str:
     """Return what an entry asks for, and a line that can be run."""
     rows = [[f"  {one.option}", _asked(one).replace("%%", "%"), one.example] for one in entry.inputs]
-    example = " ".join(f'{one.option} "{one.example}"' for one in entry.inputs if not one.default)
+    needed = [one for one in entry.inputs if not one.default] or entry.inputs
+    example = " ".join(f'{one.option} "{one.example}"' for one in needed)
     parts = [
-        f"{wrapped(f'{entry.title}: {entry.result.name}. {entry.sentence}')}\n\n  {entry.formula}",
+        f"{wrapped(f'{entry.title}: {entry.makes}. {entry.sentence}')}\n\n  {entry.formula}",
         table([["  option", "size", "such as"], *rows]),
         _standing(entry),
         f"Such as:\n  keepclear values {entry.id} {example}",
@@ -161,7 +163,7 @@ def entry_document(entry: Recipe) -> Document:
         "by": entry.id,
         "title": entry.title,
         "sentence": entry.sentence,
-        "quantity": entry.result.name,
+        "quantity": entry.makes,
         "unit": entry.result.si_unit,
         "formula": entry.formula,
         "validity": entry.validity,

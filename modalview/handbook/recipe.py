@@ -171,6 +171,11 @@ class Recipe:
     remarks: tuple[str, ...] = ()
     written: Written = "value"
 
+    @property
+    def makes(self) -> str:
+        """What comes out, in words."""
+        return "order" if self.written == "order" else self.result.name
+
     def evaluate(self, texts: Mapping[str, str], *, window: bool = False) -> Made:
         """Make the value from typed dimensions.
 

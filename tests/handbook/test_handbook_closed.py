@@ -1,4 +1,4 @@
-"""Entries against what they follow from: integrals, energies, limits, other entries, notations of the units."""
+"""Entries against what they follow from: integrals, energies, limits, other entries, and the units."""
 
 import math
 
