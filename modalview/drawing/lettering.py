@@ -89,6 +89,7 @@ def arrows_in_the_way(geometry: SheetGeometry) -> bool:
         if min(x1, y1) < 0 or x2 > geometry.width or y2 > geometry.height:
             continue  # zoomed in: somebody looks at something else
         x, y = segments.reshape(-1, 2).T
+        y = y - _sway(geometry)[1]  # it moves with its body
         if (y < 0).any() or ((x > left) & (y < below)).any():
             return True
     return False
