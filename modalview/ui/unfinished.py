@@ -44,8 +44,10 @@ def missing(model: Model | None) -> str:
     if not loose:
         return ""
     names = listed([plain(body) for body in loose])
+    # An id is written as it stands on the sheet.
+    names = f"{names[:1].upper()}{names[1:]}" if loose[0].name else f"Body {names}"
     hang, it = ("hangs", "it") if len(loose) == 1 else ("hang", "each of them")
-    lead = f"{names[:1].upper()}{names[1:]} {hang} on nothing yet: press"
+    lead = f"{names} {hang} on nothing yet: press"
     if model.motion is Motion.SHAFT_TRAIN:
         return f"{lead} H and drag from {it} to another disc."
     return f"{lead} S and drag from {it} to another part, or to empty ground."

@@ -65,7 +65,7 @@ def test_the_banner_leads_from_part_to_part_without_talk_of_files(pen, qtbot):
 
 def test_several_loose_parts_are_one_sentence_and_what_is_held_is_not_loose():
     bodies = (Body(id="a"), Body(id="b", name="pump"), Body(id="c", dof=()))
-    assert missing(Model(bodies=bodies)).startswith("A and pump hang on nothing yet")
+    assert missing(Model(bodies=bodies)).startswith("Body a and pump hang on nothing yet")
     assert missing(Model(bodies=bodies[2:])) == ""
     train = Model(motion=Motion.SHAFT_TRAIN, bodies=bodies[1:2])
     assert missing(train) == "Pump hangs on nothing yet: press H and drag from it to another disc."
