@@ -110,7 +110,7 @@ def respond(request: ResponseRequest, solution: Solution | None = None) -> Respo
     if not found:
         raise ModelFaultsError(tuple(Fault(one.id, one.reason) for one in left_out))
     method = dynamics.with_damping().method
-    residual_text = f"largest backward error of the equations of motion {max(worst, LEAST_TOLD):.0e}"
+    residual_text = f"backward error of the equations of motion at most {max(worst, LEAST_TOLD):.0e}"
     return ResponseResult(
         request=request,
         damping=_damping_used(dynamics),
@@ -344,4 +344,4 @@ def _worst_balance(powers: Sequence[tuple[float, float]]) -> tuple[str, ...]:
     shares = [abs(fed - lost) / max(fed, lost) for fed, lost in powers if max(fed, lost) > 0 and lost > 0]
     if not shares:
         return ()
-    return (f"power fed in equals power lost to {max(*shares, LEAST_TOLD):.0e} at the machine's speed",)
+    return (f"power fed in equals power lost within {max(*shares, LEAST_TOLD):.0e} at the machine's speed",)
