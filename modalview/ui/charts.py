@@ -1,4 +1,4 @@
-"""The pages of charts in one window: changes, response, speeds, mounts; they follow the model in sight."""
+"""The pages of one window that answer more than modes: they follow the model in sight."""
 
 from typing import Any
 
@@ -7,12 +7,13 @@ from PySide6.QtCore import QObject, Signal
 from modalview.model.parts import Model, Motion
 from modalview.ui.campbellpage import SpeedsPage
 from modalview.ui.changespage import ChangesPage
+from modalview.ui.measuredpage import MeasuredPage
 from modalview.ui.mountspage import MountsPage
 from modalview.ui.pages import Pages
 from modalview.ui.responsepage import ResponsePage
 from modalview.ui.theme import Theme
 
-NAMES = ("changes", "response", "speeds", "mounts")
+NAMES = ("changes", "response", "speeds", "mounts", "measured")
 
 
 class Charts(QObject):
@@ -25,16 +26,19 @@ class Charts(QObject):
         self._below = below
         self.changes, self.response = ChangesPage(below), ResponsePage(below)
         self.speeds, self.mounts = SpeedsPage(below), MountsPage(below)
+        self.measured = MeasuredPage(below)
         self.pages = {
             "changes": self.changes,
             "response": self.response,
             "speeds": self.speeds,
             "mounts": self.mounts,
+            "measured": self.measured,
         }
         for name, page in self.pages.items():
             title = name.capitalize()
             below.add(name, title, page)
             page.inquiry.failed.connect(self.failed)
+        self.measured.failed.connect(self.failed)
 
     def show_model(self, model: Model, system: str, *, anew: bool) -> None:
         """Follow the model on the sheet."""

@@ -245,6 +245,10 @@ class Frame(QMainWindow):
         """Give the keyboard to the sketch of the mounts."""
         self._go_to_chart("mounts")
 
+    def on_go_to_measured(self) -> None:
+        """Give the keyboard to the table of measured peaks."""
+        self._go_to_chart("measured")
+
     def _go_to_chart(self, name: str) -> None:
         self.below.show_page(name)
         self.charts.pages[name].setFocus()

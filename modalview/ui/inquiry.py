@@ -117,7 +117,7 @@ class Inquiry(QObject):
         self._asked = self._model, self._details
         self._errand.run(
             self._what,
-            partial(_answer, self._question, self._model, self._details),
+            partial(answered, self._question, self._model, self._details),
             partial(self._take, self._asked),
         )
 
@@ -134,7 +134,7 @@ class Inquiry(QObject):
             self._plan()
 
 
-def _answer(question: Question, model: Model, details: tuple[Any, ...], stopped: Callable[[], bool]) -> Any:
+def answered(question: Question, model: Model, details: tuple[Any, ...], stopped: Callable[[], bool]) -> Any:
     """Answer in this thread, or for a large model in a process of its own."""
     if is_large(model):
         return answer_aside(question, (model, details), stopped)

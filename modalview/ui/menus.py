@@ -111,6 +111,7 @@ MENUS: dict[str, tuple[Item, ...]] = {
         Item("Go to the spee&ds", "on_go_to_speeds", "Alt+7"),
         Item("Go to the mo&unts", "on_go_to_mounts", "Alt+8"),
         Item("Go to the &changes", "on_go_to_changes", "Alt+9"),
+        Item("Go to the &measured peaks", "on_go_to_measured", "Alt+0"),
         Item("&Why this verdict", "on_why", "Ctrl+E"),
         SEPARATOR,
         Item("&Gershgorin bounds on the scale", "on_discs", None, checkable=True),
@@ -215,6 +216,10 @@ _ELSEWHERE = (
     ("See the motion at the speed that is read", "Enter in the response chart"),
     ("Try the option of the line", "Enter in the options of the changes"),
     ("Read a value / go from window to window", "arrow keys / Page Up, Page Down on its axis"),
+    (
+        "Type a cell / tick a value to tune",
+        "Enter, F2 or just type / Space in its list, on the measured page",
+    ),
     ("Go from meeting to meeting", "left and right arrow key in the chart of speeds"),
     ("Zoom on the sheet", "wheel, two fingers drawn apart, + and -"),
     ("Move the sheet", "arrow keys, middle button, two fingers, or Space held and left button"),

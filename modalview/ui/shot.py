@@ -40,7 +40,18 @@ def main(arguments: Sequence[str] | None = None) -> int:
 
 
 _VIEWS = ("turned", "front", "side", "top")
-_PAGES = ("sheet", "modes", "damped", "plane", "values", "changes", "response", "speeds", "mounts")
+_PAGES = (
+    "sheet",
+    "modes",
+    "damped",
+    "plane",
+    "values",
+    "changes",
+    "response",
+    "speeds",
+    "mounts",
+    "measured",
+)
 
 
 def _parser() -> argparse.ArgumentParser:

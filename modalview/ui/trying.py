@@ -19,6 +19,7 @@ class Trying(QObject):
         self._before: dict[int, float] = {}
         self._at = -1  # place in the undo stack before it
         window.charts.changes.tried.connect(self.try_option)
+        window.charts.measured.tried.connect(self.try_option)
         window.document.opened.connect(self.dismiss)
         window.document.stack.indexChanged.connect(self._show)
         window.scale.before.dismissed.connect(self.dismiss)

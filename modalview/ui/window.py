@@ -98,6 +98,7 @@ class Window(Frame):
         self.charts.failed.connect(self.on_failed)
         self.charts.response.motion_changed.connect(self._show_motion)
         self.charts.response.magnitude_asked.connect(self._ask_magnitude)
+        self.charts.measured.edited.connect(self.document.push)
         self.parts.told.connect(lambda words: self.statusBar().showMessage(words, _TOLD_MS))
         self.play_bar.moving_changed.connect(self.on_move)
         self.play_bar.speed_changed.connect(self.on_speed)
