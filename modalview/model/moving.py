@@ -319,6 +319,15 @@ def _extents(model: Model, ids: Collection[str], axis: int) -> list[_Extent]:
     return found
 
 
+def span(model: Model, axis: int) -> tuple[float, float] | None:
+    """Return from where to where all parts reach along a coordinate, in m, as drawn; None for none."""
+    ids = [*(body.id for body in model.bodies), *(support.id for support in model.supports)]
+    parts = _extents(model, ids, axis)
+    if not parts:
+        return None
+    return float(min(one.at("low") for one in parts)), float(max(one.at("high") for one in parts))
+
+
 def _settled(model: Model, middles: Mapping[str, Decimal], axis: int) -> Model:
     """Move parts so that their centres come to given coordinates along one axis."""
     parts: tuple[Body | Support, ...] = (*model.bodies, *model.supports)

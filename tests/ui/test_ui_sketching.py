@@ -50,3 +50,19 @@ def test_the_sheet_stands_still_where_an_arrow_has_room(pen):
     before = place(pen)
     add_order(pen)
     assert place(pen) == before
+
+
+def test_parts_of_another_window_are_pasted_beside_what_is_there_and_all_is_in_sight(pen, make_window, qtbot):
+    pen.window.sketching.editing.choose_all()
+    pen.window.sketching.editing.copy()
+    other = make_window()
+    other.document.start(pen.window.document.model)
+    qtbot.waitUntil(lambda: other.sketching.hand.ready)
+    other.sketching.editing.paste()
+    first, second = other.document.model.bodies
+    gap = second.position[0].si - first.position[0].si
+    assert gap > first.drawn.width.si
+    assert second.position[1].si == first.position[1].si
+    geometry = Pen(other, qtbot).laid_out()
+    assert (geometry.boxes[:, 0] > 0).all()
+    assert (geometry.boxes[:, 2] < geometry.width).all()

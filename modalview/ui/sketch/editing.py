@@ -9,7 +9,7 @@ from PySide6.QtWidgets import QWidget
 
 from modalview.errors import InputError
 from modalview.model.copying import duplicated, fragment, pasted
-from modalview.model.moving import aligned, spread
+from modalview.model.moving import aligned, span, spread
 from modalview.model.parts import Body, Model, Motion, Support
 from modalview.model.tolerance_text import typed_entry
 from modalview.model.turning import mirrored, rotated
@@ -30,6 +30,7 @@ class Editing(QObject):
     def __init__(self, hand: Hand, sheet: QWidget) -> None:
         super().__init__(sheet)
         self._hand, self._sheet = hand, sheet
+        self._copied = ""  # in this window
         self._copies = 0  # pastes of the same parts stand further and further aside
 
     # Choosing
@@ -228,7 +229,7 @@ class Editing(QObject):
         data.setData(PARTS, text.encode("utf-8"))
         data.setText(text)
         QGuiApplication.clipboard().setMimeData(data)
-        self._copies = 0
+        self._copied, self._copies = text, 0
         hand.say(f"{hand.named(hand.chosen).capitalize()} copied")
         return True
 
@@ -250,7 +251,8 @@ class Editing(QObject):
         hand.hold_view()
         try:
             piece = parse_model(text)
-            after, ids = pasted(hand.placed_model(), piece, self._step(ASIDE * (self._copies + 1)))
+            beside = self._beside(piece) if text != self._copied else None
+            after, ids = pasted(hand.placed_model(), piece, beside or self._step(ASIDE * (self._copies + 1)))
         except InputError as error:
             first = str(error).splitlines()[0]
             hand.say(f"What is on the clipboard cannot be pasted here: {first}")
@@ -258,6 +260,20 @@ class Editing(QObject):
         if hand.change(after, f"Paste {len(ids)} parts"):
             self._copies += 1
             hand.choose(ids)
+            if beside is not None:
+                self._sheet.fit()
+
+    def _beside(self, piece: Model) -> tuple[float, ...] | None:
+        """Return the step that takes parts of another window beside what is here; None where it is free."""
+        axes = self._hand.axes_shown()
+        here, there = ([span(one, axis) for axis in axes] for one in (self._hand.placed_model(), piece))
+        by = [0.0, 0.0, 0.0]
+        for old, new in zip(here, there, strict=True):
+            if old is None or new is None or old[1] < new[0] or new[1] < old[0]:
+                return None
+        (_, right), (left, _) = here[0], there[0]
+        by[axes[0]] = right - left + ASIDE * self._hand.grid(0)
+        return tuple(by[: 3 if self._hand.model.motion is Motion.SPACE else 2])
 
     def key(self, event: QKeyEvent) -> bool:
         """Do what a key of the clipboard asks for on the sheet; tell whether it was one."""
