@@ -2,7 +2,7 @@
 
 import math
 
-from modalview.handbook.recipe import RecipeInput
+from modalview.handbook.sizes import RecipeInput
 from modalview.units import quantities as q
 from modalview.units.quantities import Quantity
 

@@ -1,15 +1,15 @@
-"""Beams in bending, at the point and in the direction of the load; plate strips; their sections.
+"""Beams in bending, at the point and in the direction of the load.
 
 Lengths from the ends to the load are a and b = L - a. All for slender beams: shear makes a short one softer,
 which ``SLENDER`` guards.
 """
 
-import math
 from collections.abc import Callable
 
-from modalview.handbook.asked import asked, length, length_or_none, poisson, young
-from modalview.handbook.recipe import Check, Recipe, RecipeInput, Sizes, Source
-from modalview.handbook.validity import at_least, less
+from modalview.handbook.asked import asked, length, young
+from modalview.handbook.recipe import Check, Recipe, Source
+from modalview.handbook.sizes import RecipeInput, Sizes
+from modalview.handbook.validity import less
 from modalview.units import quantities as q
 from modalview.units.show import short
 
@@ -86,31 +86,6 @@ def clamped_overhang(span: float, overhang: float, young: float, second: float) 
     return 12 * young * second / (overhang**2 * (3 * span + 4 * overhang))
 
 
-def strip(length: float, width: float, thickness: float, young: float, poisson: float) -> float:
-    """Return the stiffness of a wide plate strip clamped at one edge, loaded along the other."""
-    return 3 * young * width * thickness**3 / 12 / (1 - poisson**2) / length**3
-
-
-def strip_clamped(length: float, width: float, thickness: float, young: float, poisson: float) -> float:
-    """Return the stiffness of a wide plate strip clamped at two opposite edges, loaded along its middle."""
-    return 192 * young * width * thickness**3 / 12 / (1 - poisson**2) / length**3
-
-
-def rectangle(width: float, depth: float) -> float:
-    """Return the second moment of area of a rectangle about its middle, across the depth."""
-    return width * depth**3 / 12
-
-
-def tube(outer: float, inner: float) -> float:
-    """Return the second moment of area of a round tube or rod about a diameter."""
-    return math.pi * (outer**4 - inner**4) / 64
-
-
-def flanged(width: float, depth: float, flange: float, web: float) -> float:
-    """Return the second moment of area of an I or a box section about its strong axis, without fillets."""
-    return (width * depth**3 - (width - web) * (depth - 2 * flange) ** 3) / 12
-
-
 _L = length("length", "length L", "2 m")
 _EI = (
     young(),
@@ -161,7 +136,7 @@ def _beam(  # noqa: PLR0913, PLR0917  (a row of a table)
     )
 
 
-BEAMS = (
+RECIPES = (
     _beam(
         "cantilever-tip",
         "cantilever, load at the tip",
@@ -270,102 +245,3 @@ BEAMS = (
         BERNOULLI,
     ),
 )
-
-_PLATE = (
-    length("length", "length L across the clamped edge", "300 mm"),
-    length("width", "width b along the clamped edge", "900 mm"),
-    length("thickness", "thickness t", "12 mm"),
-    young(),
-    poisson(),
-)
-_THIN = "t at most L/10, b at least 2 L, so that it bends to a cylinder; load spread along the edge"
-_STRIP = Source("plate bent to a cylinder, E replaced by E/(1 - nu^2)", "closed form")
-_WIDE = (
-    at_least(lambda s: s["length"] / s["thickness"], 10, "L/t"),
-    at_least(lambda s: s["width"] / s["length"], 2, "b/L"),
-)
-
-PLATES = (
-    Recipe(
-        "plate-strip-cantilever",
-        "plate strip clamped along one edge",
-        "Stiffness of a wide plate for a load spread along the free edge.",
-        _PLATE,
-        q.STIFFNESS,
-        strip,
-        "k = 3 E b t^3/(12 (1 - nu^2) L^3)",
-        _THIN,
-        _STRIP,
-        "15 %",
-        doubts=_WIDE,
-    ),
-    Recipe(
-        "plate-strip-clamped",
-        "plate strip clamped along two edges",
-        "Stiffness of a wide plate for a load spread along the middle between two clamped edges.",
-        _PLATE,
-        q.STIFFNESS,
-        strip_clamped,
-        "k = 192 E b t^3/(12 (1 - nu^2) L^3)",
-        _THIN,
-        _STRIP,
-        "15 %",
-        doubts=_WIDE,
-    ),
-)
-
-_SECTION = Source("integral of y^2 dA", "closed form")
-
-SECTIONS = (
-    Recipe(
-        "second-moment-rectangle",
-        "second moment of a rectangle",
-        "Of a bar or plate that bends across its depth.",
-        (length("width", "width b", "50 mm"), length("depth", "depth h", "100 mm")),
-        q.SECOND_MOMENT,
-        rectangle,
-        "I = b h^3/12",
-        "about the middle, bending in the direction of h",
-        _SECTION,
-        "3 %",
-    ),
-    Recipe(
-        "second-moment-tube",
-        "second moment of a round rod or tube",
-        "Of a shaft or pipe in bending.",
-        (
-            length("outer", "outer diameter D", "114.3 mm"),
-            length_or_none("inner", "inner diameter d", "104.3 mm", "0 mm"),
-        ),
-        q.SECOND_MOMENT,
-        tube,
-        "I = pi (D^4 - d^4)/64",
-        "concentric circles",
-        _SECTION,
-        "5 %",
-        (less("inner", "outer", "the hole must be smaller than the outside"),),
-    ),
-    Recipe(
-        "second-moment-i-section",
-        "second moment of an I or box section",
-        "Of a rolled beam, strong axis; of a box with w the sum of both walls.",
-        (
-            length("width", "width b", "150 mm"),
-            length("depth", "depth h", "300 mm"),
-            length("flange", "thickness of a flange t", "10.7 mm"),
-            length("web", "thickness of the web, or of both walls, w", "7.1 mm"),
-        ),
-        q.SECOND_MOMENT,
-        flanged,
-        "I = (b h^3 - (b - w) (h - 2 t)^3)/12",
-        "fillets not counted: a rolled beam's table gives some per cent more",
-        _SECTION,
-        "5 %",
-        (
-            lambda s: "" if 2 * s["flange"] < s["depth"] else "both flanges must be thinner than the depth",
-            lambda s: "" if s["web"] <= s["width"] else "the web must not be wider than the flanges",
-        ),
-    ),
-)
-
-RECIPES = BEAMS + PLATES

@@ -4,7 +4,8 @@ import math
 
 from modalview.handbook.asked import asked, number, word
 from modalview.handbook.orders import PRACTICE
-from modalview.handbook.recipe import Recipe, Sizes, Source
+from modalview.handbook.recipe import Recipe, Source
+from modalview.handbook.sizes import Sizes
 from modalview.units import quantities as q
 from modalview.units.show import short
 
@@ -141,7 +142,7 @@ RECIPES = (
         q.VELOCITY,
         severity_limit,
         "table",
-        "rms, 10 Hz to 1 kHz; I small, II medium, III large on rigid, IV on soft ground; later parts differ",
+        "rms, 10 Hz to 1 kHz; I small, II medium, III large on rigid, IV on soft foundations",
         Source("ISO 10816-1:1995, annex B (now ISO 20816)", "from memory, check against the current edition"),
         remarks=(CHECK,),
     ),

@@ -4,6 +4,7 @@ import math
 
 from modalview.handbook.asked import GRAVITY, asked, density, length, length_or_none, number
 from modalview.handbook.recipe import Recipe, Source
+from modalview.handbook.sections import FITS, SECTION
 from modalview.handbook.validity import less
 from modalview.units import quantities as q
 
@@ -26,6 +27,11 @@ def section(line_mass: float, length: float) -> float:
 def section_area(area: float, length: float, density: float) -> float:
     """Return the mass of a bar of any section."""
     return density * area * length
+
+
+def flanged(width: float, depth: float, flange: float, web: float, length: float, density: float) -> float:
+    """Return the mass of an I or box section, without fillets."""
+    return density * length * (2 * width * flange + web * (depth - 2 * flange))
 
 
 def of_weight(weight: float) -> float:
@@ -148,6 +154,19 @@ MASSES = (
         "even along its length",
         _BY_VOLUME,
         "4 %",
+    ),
+    Recipe(
+        "mass-i-section",
+        "mass of an I or box section",
+        "Mass of a steel beam from the dimensions of its section; of a box with w the sum of both walls.",
+        (*SECTION, length("length", "length L", "6 m"), _STEEL),
+        q.MASS,
+        flanged,
+        "m = rho L (2 b t + w (h - 2 t))",
+        "fillets not counted: a rolled beam's table gives some per cent more",
+        _BY_VOLUME,
+        "6 %",
+        FITS,
     ),
     Recipe(
         "mass-of-weight",
@@ -299,4 +318,3 @@ INERTIAS = (
         "5 %",
     ),
 )
-RECIPES = MASSES + INERTIAS

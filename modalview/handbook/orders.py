@@ -3,7 +3,8 @@
 import math
 
 from modalview.handbook.asked import angle, asked, count, length, number
-from modalview.handbook.recipe import Recipe, RecipeInput, Sizes, Source
+from modalview.handbook.recipe import Recipe, Source
+from modalview.handbook.sizes import RecipeInput, Sizes
 from modalview.units import quantities as q
 from modalview.units.show import short
 
@@ -322,4 +323,3 @@ DRIVES = (
         "10 %",
     ),
 )
-RECIPES = PASSING + ELECTRICAL + DRIVES

@@ -8,7 +8,8 @@ import math
 from collections.abc import Callable
 
 from modalview.handbook.asked import asked
-from modalview.handbook.recipe import Recipe, RecipeInput, Sizes, Source
+from modalview.handbook.recipe import Recipe, Source
+from modalview.handbook.sizes import RecipeInput, Sizes
 from modalview.units import quantities as q
 
 # Below this the exact part is Rayleigh's to more digits than its difference leaves.

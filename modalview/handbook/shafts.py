@@ -3,7 +3,8 @@
 import math
 
 from modalview.handbook.asked import asked, length, length_or_none, number, several, shear
-from modalview.handbook.recipe import Check, Recipe, Sizes, Source
+from modalview.handbook.recipe import Check, Recipe, Source
+from modalview.handbook.sizes import Sizes
 from modalview.handbook.springs import RAO, STATICS, series
 from modalview.handbook.validity import as_many, at_least, less
 from modalview.units import quantities as q

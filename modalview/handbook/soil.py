@@ -8,7 +8,8 @@ import math
 from collections.abc import Callable
 
 from modalview.handbook.asked import asked, length, poisson
-from modalview.handbook.recipe import Recipe, RecipeInput, Source
+from modalview.handbook.recipe import Recipe, Source
+from modalview.handbook.sizes import RecipeInput
 from modalview.handbook.validity import at_most
 from modalview.units import quantities as q
 from modalview.units.quantities import Quantity

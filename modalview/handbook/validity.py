@@ -3,7 +3,8 @@
 import math
 from collections.abc import Callable
 
-from modalview.handbook.recipe import Check, Sizes
+from modalview.handbook.recipe import Check
+from modalview.handbook.sizes import Sizes
 from modalview.units.show import short
 
 # Sizes that are equal but for the rounding of their units are equal.

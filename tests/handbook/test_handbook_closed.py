@@ -6,7 +6,7 @@ import numpy as np
 import pytest
 
 from modalview.handbook.catalogue import recipe
-from modalview.handbook.mounts import LINDLEY
+from modalview.handbook.rubber import LINDLEY
 from modalview.units import quantities as q
 from modalview.units.parse import read
 
@@ -239,6 +239,16 @@ def test_masses_of_the_same_body_agree():
     area = math.pi * (0.8**2 - 0.2**2) / 4
     ring = made("mass-cylinder", **RING, length="0.4 m", **steel)
     assert ring == pytest.approx(made("mass-bar", area=f"{area!r} m2", length="0.4 m", **steel))
+
+
+def test_the_mass_of_an_i_section_is_near_its_table():
+    """A rolled section IPE 300 has 42.2 kg/m with its fillets (from memory); without them a little less."""
+    sizes = {"width": "150 mm", "depth": "300 mm", "flange": "10.7 mm", "web": "7.1 mm"}
+    found = made("mass-i-section", **sizes, length="1 m", density="7850 kg/m3")
+    assert 0.94 * 42.2 < found < 42.2
+    full = {**sizes, "web": "150 mm"}
+    block = made("mass-plate", length="1 m", width="150 mm", thickness="300 mm", density="7850 kg/m3")
+    assert made("mass-i-section", **full, length="1 m", density="7850 kg/m3") == pytest.approx(block)
 
 
 def test_mass_from_weight_in_either_system():
