@@ -11,11 +11,12 @@ from modalview.model.ids import fresh_id
 from modalview.model.parts import End, Excitation, MeasuredPeak, Model
 from modalview.model.tolerance_text import typed_entry
 from modalview.units.numbers import split_number
-from modalview.units.quantities import FREQUENCY
+from modalview.units.quantities import FREQUENCY, LENGTH
 
 COLUMNS = ("peak", "frequency", "uncertainty", "body", "direction")
 ID, FREQUENCY_AT, UNCERTAINTY, BODY, DIRECTION = range(len(COLUMNS))
 STEM = "peak "
+_AT = " at "  # between a body and the point on it, from its centre of gravity
 
 
 def peak_texts(model: Model, peak: MeasuredPeak) -> tuple[str, ...]:
@@ -29,8 +30,10 @@ def _place_text(model: Model, at: End | None) -> str:
     if at is None:
         return ""
     if at.body is not None:
-        return next((one.name or one.id for one in model.bodies if one.id == at.body), at.body)
-    return next((one.name or one.id for one in model.supports if one.id == at.support), at.support or "")
+        name = next((one.name or one.id for one in model.bodies if one.id == at.body), at.body)
+    else:
+        name = next((one.name or one.id for one in model.supports if one.id == at.support), at.support or "")
+    return f"{name}{_AT}{'; '.join(one.text for one in at.offset)}" if at.offset else name
 
 
 def retyped_peak(model: Model, number: int, column: int, text: str) -> Rewrite:
@@ -66,13 +69,21 @@ def _retyped(model: Model, peak: MeasuredPeak, column: int, text: str) -> Measur
 def _place(model: Model, text: str) -> End | None:
     if not text:
         return None
+    body, at, point = text.rpartition(_AT)
+    if at and not any(text in (one.id, one.name) for one in model.bodies):
+        offset = tuple(typed_entry(one, LENGTH) for one in re.split(r";|,\s", point))
+        return End(body=_body(model, body.strip()), offset=offset)
+    return End(body=_body(model, text))
+
+
+def _body(model: Model, text: str) -> str:
     wanted = text.casefold()
     found = [one.id for one in model.bodies if one.id == text]
     found = found or [
         one.id for one in model.bodies if wanted in (one.id.casefold(), (one.name or "").casefold())
     ]
     if len(found) == 1:
-        return End(body=found[0])
+        return found[0]
     if found:
         raise InputError(f'"{text}" names several bodies: write one of the ids {", ".join(found)}')
     names = ", ".join(one.name or one.id for one in model.bodies[:12])

@@ -189,7 +189,8 @@ class PeakPanel(QWidget):
         refused = self._refusals.pop((key, column), None)
         self._left_out = ()
         try:
-            if not (refused and not text):  # an emptied refusal gives back what was
+            new = row == len(self._model.measured)
+            if new or text or not refused:  # an emptied refusal gives back what was
                 self._take(row, column, text)
         except InputError as error:
             self._refusals[key, column] = text, _why(error)

@@ -18,7 +18,13 @@ def model():
 
 def test_columns_show_a_peak_by_the_name_of_its_body(model):
     name = next(one.name or one.id for one in model.bodies if one.id == "motor")
-    assert peak_texts(model, model.measured[0]) == ("bump 1", "17.0 Hz", "0.25 Hz", name, "x")
+    assert peak_texts(model, model.measured[0]) == (
+        "bump 1",
+        "17.0 Hz",
+        "0.25 Hz",
+        f"{name} at 0 m; 0.8 m",
+        "x",
+    )
 
 
 def test_retyping_keeps_the_point_on_the_body(model):
@@ -26,6 +32,8 @@ def test_retyping_keeps_the_point_on_the_body(model):
     assert after.measured[0].frequency.text == "17.4 Hz"
     assert after.measured[0].at == model.measured[0].at
     assert not retyped_peak(model, 0, peaks.BODY, peak_texts(model, model.measured[0])[peaks.BODY])
+    moved = retyped_peak(model, 0, peaks.BODY, "motor at 0 m; 0,9 m").apply(model).measured[0].at
+    assert (moved.body, [one.text for one in moved.offset]) == ("motor", ["0 m", "0.9 m"])
     assert retyped_peak(model, 0, peaks.BODY, "HEAD").apply(model).measured[0].at.body == "head"
 
 
@@ -36,6 +44,8 @@ def test_retyping_keeps_the_point_on_the_body(model):
         (peaks.FREQUENCY_AT, "0 Hz", "above zero"),
         (peaks.UNCERTAINTY, "1 kg", "frequency"),
         (peaks.BODY, "moter", 'no body "moter"'),
+        (peaks.BODY, "motor at 1 m", "offset"),
+        (peaks.BODY, "motor at top", "length"),
         (peaks.DIRECTION, "z", "direction"),
         (peaks.ID, "", "name of its own"),
         (peaks.ID, "bump 2", "bump 2"),

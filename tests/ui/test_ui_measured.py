@@ -1,6 +1,7 @@
 """The page of measured peaks: typed, pasted, removed and tuned to, each by one undoable edit."""
 
 from dataclasses import replace
+from multiprocessing import Pipe
 
 import pytest
 from conftest import settle
@@ -9,11 +10,14 @@ from PySide6.QtGui import QGuiApplication
 from PySide6.QtTest import QTest
 from PySide6.QtWidgets import QApplication, QLineEdit
 
+from modalview.drawing.tunecontent import wish
 from modalview.model import typed_peaks as peaks
 from modalview.places import demo_models
 from modalview.store import read_model
+from modalview.study.results import never
 from modalview.ui.peaktable import MODE
 from modalview.ui.theme import DARK
+from modalview.ui.tunequestions import tunable, tuning
 from modalview.ui.tunevalues import RANGE, VALUE
 
 PUMP_5 = demo_models() / "5-raw-water-vertical-pump"
@@ -53,7 +57,7 @@ def tuned(window, qtbot):
 def test_table_shows_the_peaks(bumped):
     head, *rows = bumped.charts.measured.panel.table.rows_text()
     assert head == ["peak", "frequency", "uncertainty", "body", "direction", "take for mode"]
-    assert rows == [["bump 1", "17.0 Hz", "0.25 Hz", "motor", "x", ""]]
+    assert rows == [["bump 1", "17.0 Hz", "0.25 Hz", "motor at 0 m; 0.8 m", "x", ""]]
 
 
 def test_peak_is_added_by_button_and_keys_and_undone(bumped):
@@ -132,6 +136,47 @@ def test_new_peak_is_given_up_by_remove(bumped):
     assert bumped.document.stack.count() == 0
 
 
+def test_new_peak_whose_frequency_is_refused_can_be_emptied(bumped):
+    page = bumped.charts.measured
+    page.panel.add.click()
+    type_cell(page, 1, peaks.FREQUENCY_AT, "loud")
+    assert "New peak: not used" in page.panel.reason.text()
+    type_cell(page, 1, peaks.FREQUENCY_AT, "")
+    assert page.panel.table.item(1, peaks.FREQUENCY_AT).text() == ""
+    assert bumped.document.stack.count() == 0
+
+
+def test_value_is_ticked_by_space(bumped):
+    page = bumped.charts.measured
+    page.values.setFocus()
+    page.values.setCurrentCell(0, VALUE)
+    QTest.keyClick(page.values, Qt.Key.Key_Space)
+    assert [line.name for line, _ in page.values.chosen()] == [page.inquiry.result[0].name]
+    QTest.keyClick(page.values, Qt.Key.Key_Space)
+    assert page.values.chosen() == ()
+
+
+def through_a_pipe(what):
+    ours, theirs = Pipe()
+    with ours, theirs:
+        ours.send(what)
+        return theirs.recv()
+
+
+def test_question_and_answer_pass_to_a_process_of_its_own():
+    model = replace(read_model(DESIGN), measured=read_model(BUMPED).measured[:1])
+    (line,) = (one for one in tunable(model, (), never) if one.name == SOLE)
+    asked = through_a_pipe((model, (((line, "6e7 to 1e9 N m/rad"),), ())))
+    answer = through_a_pipe(tuning(*asked, never))
+    assert answer.edit.apply(model).links != model.links
+
+
+def test_range_is_read_by_the_rule_of_the_window():
+    (line,) = (one for one in tunable(read_model(DESIGN), (), never) if one.name == SOLE)
+    assert wish(line, "6,5e7 to 1,5e9 N m/rad") == f"{SOLE}=6.5e7 N m/rad to 1.5e9 N m/rad"
+    assert wish(line, line.span) == wish(line, "") == SOLE
+
+
 def test_sole_is_tuned_to_the_peak_and_applied(bumped, qtbot):
     page = bumped.charts.measured
     before = bumped.document.model
@@ -165,6 +210,7 @@ def test_found_is_pale_after_an_edit_and_cannot_be_applied(bumped, qtbot):
     type_cell(page, 0, peaks.FREQUENCY_AT, "18 Hz")
     assert page.sentence.text().startswith("Out of date")
     assert not page.room.named["peaks"].isEnabled()
+    assert not page.room.named["values"].isEnabled()
     assert not page.apply.isEnabled()
     settle(qtbot, bumped)
 
