@@ -52,7 +52,7 @@ class Made:
     given : tuple of (str, str)
         Names and texts from which ``by`` makes the same again.
     source : str
-        One line for the value's source in a file.
+        One line for the value's source in a file: who says so, and where the range of validity is left.
     """
 
     text: str
@@ -141,7 +141,7 @@ class Recipe:
         self._refuse(tuple(Fault("", told) for check in self.refusals if (told := check(sizes))))
         si = self._computed(sizes)
         doubts = [told for check in self.doubts if (told := check(sizes))]
-        source = f"{self.title} from dimensions: {self.source.citation} ({self.source.status})"
+        source = f"handbook, {self.title}: {self.source.citation} ({self.source.status})"
         return Made(
             value_text(si, self.result, percent=self.written == "percent"),
             si,
@@ -150,7 +150,7 @@ class Recipe:
             (*typed.notes, *doubts, *self.remarks),
             self.id,
             tuple(typed.given.items()),
-            source,
+            "; ".join((source, *doubts)),
         )
 
     def _computed(self, sizes: Sizes) -> float:

@@ -182,6 +182,8 @@ def test_what_leaves_the_range_is_told_and_made(name, texts, says):
     made = entry.evaluate({**examples(entry), **texts})
     assert made.si > 0
     assert any(says in note for note in made.notes) or not says
+    doubts = [note for note in made.notes if "read as" not in note and "taken as" not in note]
+    assert all(note in made.source for note in doubts if note not in entry.remarks)
 
 
 @pytest.mark.parametrize(
