@@ -10,7 +10,8 @@ from modalview.cli.printing import OK, say, say_json
 from modalview.cli.table import table, wrapped
 from modalview.handbook.catalogue import GROUPS, recipe
 from modalview.handbook.handed import file_entry
-from modalview.handbook.recipe import Made, Recipe, RecipeInput
+from modalview.handbook.recipe import Made, Recipe
+from modalview.handbook.sizes import RecipeInput
 
 Document = dict[str, Any]
 JSON_HELP = "print JSON: SI, with the unit beside"
