@@ -155,7 +155,8 @@ def _read(one: RecipeInput, text: str, notes: list[str], *, window: bool) -> tup
     if not text:
         raise UnitError(f'it is missing; write it like "{one.example}"')
     if one.quantity is None:
-        return _word(one, text), text
+        chosen = _word(one, text)
+        return chosen, chosen
     parts = [part.strip() for part in text.split(BETWEEN)] if one.several else [text]
     numbers = tuple(_number(one, part, notes, window=window) for part in parts)
     kept = f"{BETWEEN} ".join(part.replace(",", ".") for part in parts)
@@ -163,9 +164,10 @@ def _read(one: RecipeInput, text: str, notes: list[str], *, window: bool) -> tup
 
 
 def _word(one: RecipeInput, text: str) -> str:
-    if text not in one.choices:
+    chosen = next((choice for choice in one.choices if choice.casefold() == text.casefold()), None)
+    if chosen is None:
         raise UnitError(f'"{text}" is none of: {", ".join(one.choices)}')
-    return text
+    return chosen
 
 
 def _number(one: RecipeInput, text: str, notes: list[str], *, window: bool) -> float:

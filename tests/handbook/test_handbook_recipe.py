@@ -194,6 +194,11 @@ def test_inside_the_range_nothing_is_told(name, texts):
     assert recipe(name).evaluate({**examples(recipe(name)), **texts}).notes == ()
 
 
+def test_a_word_is_taken_in_any_case_and_kept_as_it_is_listed():
+    made = recipe("balance-grade").evaluate({"machine": "Gas and Steam Turbines"})
+    assert (made.text, made.given) == ("G 2.5", (("machine", "gas and steam turbines"),))
+
+
 def test_units_do_not_change_a_value():
     inches = {"wire": "0.7874015748031497 in", "mean": "20 cm", "turns": "5", "shear": "80000 N/mm2"}
     assert recipe("coil-spring").evaluate(inches).si == pytest.approx(40000, rel=1e-14)
