@@ -4,6 +4,7 @@ import inspect
 import json
 import math
 import re
+from itertools import product
 
 import pytest
 
@@ -16,6 +17,21 @@ from modalview.units import quantities as q
 from modalview.units.parse import read
 
 COIL = {"wire": "20 mm", "mean": "200 mm", "turns": "5", "shear": "80 GPa"}
+ODD = (
+    "nan",
+    "inf",
+    "1e400",
+    "1 m",
+    "1e-29 m",
+    "1e29 m",
+    "1e29",
+    "1;2",
+    "; ;",
+    "é",
+    "1e29 Pa",
+    "1e28 rpm",
+    "89.9999 deg",
+)
 STATUSES = {
     "formula seen in the source",
     "from memory",
@@ -106,6 +122,15 @@ class TestEveryEntry:
                 unit = re.sub(r"^G .*", " mm/s", re.sub(r"^[0-9.e]+", "", one.example.partition(";")[0]))
                 told = faults(entry.id, {**examples(entry), one.name: f"-3{unit}"})
                 assert "out of range" in told[0], told
+
+    def test_odd_texts_end_as_a_value_or_as_faults(self, entry):
+        for one, text in product(entry.inputs, ODD):
+            try:
+                made = entry.evaluate({**examples(entry), one.name: text})
+            except RecipeFaultsError as error:
+                assert error.faults  # noqa: PT017  (either end is right, a third is not)
+            else:
+                assert math.isfinite(made.si)
 
 
 def test_every_entry_stands_in_one_group():
