@@ -19,6 +19,7 @@ from modalview.ui.tunequestions import tunable, tuning
 from modalview.ui.tunevalues import TuneValues
 
 TUNE, ALONE, STOP = "Tune", "Try each value alone", "Stop"
+OTHERWISE = "Out of date: other values, ranges or pairs are chosen by now."
 TABLES = {
     "peaks": "Peaks and their modes",
     "values": "Tuned values",
@@ -223,15 +224,7 @@ class MeasuredPage(QWidget):
         self.tune.setEnabled(peaks)
         self.apply.setEnabled(self.current and content is not None and content.edit is not None)
         found = self.refusal or (content.sentence if content is not None else "")
-        said = (
-            "Tuning…"
-            if self._errand.busy
-            else OLD + "."
-            if pale
-            else "Applied; one undo takes it back."
-            if applied
-            else ""
-        )
+        said = self._told(pale=pale, applied=applied)
         self.sentence.setText("\n".join(one for one in (said, found) if one))
         self.sentence.setProperty("role", "quiet" if pale else "strong")
         self.sentence.style().unpolish(self.sentence)
@@ -242,6 +235,14 @@ class MeasuredPage(QWidget):
             table.setEnabled(not pale)
             if not known:
                 table.show_figures((), ())
+
+    def _told(self, *, pale: bool, applied: bool) -> str:
+        """Say whether what was found still holds."""
+        if self._errand.busy:
+            return "Tuning…"
+        if pale:
+            return f"{OLD}." if self._asked[0] != self._model else OTHERWISE
+        return "Applied; one undo takes it back." if applied else ""
 
     # Qt's own
 
