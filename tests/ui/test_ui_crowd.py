@@ -11,7 +11,8 @@ from modalview.ui import crowd
 def crowded(pump, qtbot, monkeypatch):
     """The pump, painted as if it were crowded."""
     pump.on_move(False)
-    QApplication.processEvents()  # the places find their sizes
+    pump.sheet.setFixedSize(pump.sheet.size())  # places still find their room elsewhere
+    QApplication.processEvents()
     pump.sheet.direct = pump.sheet.grab().toImage()
     monkeypatch.setattr(crowd, "AT_ONCE", 0)
     pump.sheet.repaint()

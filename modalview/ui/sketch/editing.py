@@ -3,7 +3,7 @@
 from collections.abc import Callable
 from typing import Any
 
-from PySide6.QtCore import QMimeData, QObject
+from PySide6.QtCore import QObject
 from PySide6.QtGui import QGuiApplication, QKeyEvent, QKeySequence
 from PySide6.QtWidgets import QWidget
 
@@ -19,7 +19,6 @@ from modalview.ui.sketch.hand import Hand
 from modalview.ui.sketch.kinds import kind_of
 from modalview.units import quantities as q
 
-PARTS = "application/x-keepclear-parts"
 # Copies stand so many steps of the grid beside what they are copies of.
 ASIDE = 2
 
@@ -225,10 +224,8 @@ class Editing(QObject):
             hand.say("Choose bodies or supports first; links between them come along.")
             return False
         text = dump_model(fragment(hand.placed_model(), hand.chosen))
-        data = QMimeData()
-        data.setData(PARTS, text.encode("utf-8"))
-        data.setText(text)
-        QGuiApplication.clipboard().setMimeData(data)
+        # As text: data of our own making would outlive Python at the end of the program, and crash it.
+        QGuiApplication.clipboard().setText(text)
         self._copied, self._copies = text, 0
         hand.say(f"{hand.named(hand.chosen).capitalize()} copied")
         return True
@@ -241,13 +238,12 @@ class Editing(QObject):
     def paste(self) -> None:
         """Put the parts on the clipboard on the sheet, a little aside."""
         hand = self._hand
-        data = QGuiApplication.clipboard().mimeData()
         if hand.model is None or not hand.ready:
             return
-        if data is None or not (data.hasFormat(PARTS) or data.hasText()):
+        text = QGuiApplication.clipboard().text()
+        if not text:
             hand.say("There are no parts on the clipboard.")
             return
-        text = bytes(data.data(PARTS).data()).decode("utf-8") if data.hasFormat(PARTS) else data.text()
         hand.hold_view()
         try:
             piece = parse_model(text)
