@@ -8,7 +8,20 @@ import sys
 from collections.abc import Sequence
 from pathlib import Path
 
-COMMANDS = ("bounds", "modes", "check", "values", "import", "picture")
+COMMANDS = (
+    "bounds",
+    "modes",
+    "check",
+    "speeds",
+    "response",
+    "changes",
+    "mounts",
+    "tune",
+    "vary",
+    "values",
+    "import",
+    "picture",
+)
 HELP = ("-h", "--help", "--version")
 _NO_SCREEN = """\
 keepclear: there is no screen here to open a window on.
@@ -16,6 +29,12 @@ These commands work without one:
   keepclear bounds FILE                 what is known before a solve
   keepclear modes FILE                  the natural frequencies, with tolerance ranges
   keepclear check FILE...               is every speed and order clear of every mode
+  keepclear speeds FILE                 which speeds are clear of every mode
+  keepclear response FILE               motion and forces under the excitations
+  keepclear changes FILE                what clears every check
+  keepclear mounts FILE                 what springs and mounts carry at rest
+  keepclear tune FILE                   values tuned to measured peaks
+  keepclear vary FILE                   values varied over ranges or at random
   keepclear picture FILE -o out.png     the sheet, a mode, the scale or the complex plane as a picture
   keepclear values                      stiffness, mass, inertia and orders from dimensions
   keepclear import ... -o FILE          make a model of a table of nodes and a table of springs

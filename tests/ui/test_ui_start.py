@@ -4,6 +4,7 @@ import sys
 import pytest
 
 from modalview import __main__ as start
+from modalview.cli import commands
 
 
 def test_without_a_screen_the_window_command_names_the_commands_that_work(monkeypatch, capsys):
@@ -13,6 +14,10 @@ def test_without_a_screen_the_window_command_names_the_commands_that_work(monkey
     assert start.main(["pump.keepclear"]) == 2
     said = capsys.readouterr().err
     assert all(f"keepclear {command} " in said for command in start.COMMANDS)
+
+
+def test_every_command_is_known_by_its_word_alone():
+    assert set(start.COMMANDS) == set(commands.COMMANDS)
 
 
 @pytest.mark.parametrize("variable", ["DISPLAY", "WAYLAND_DISPLAY", "QT_QPA_PLATFORM"])
