@@ -7,7 +7,7 @@ The sheet, in ``sheet``, built once per model and window size:
 
     geometry = sheet_geometry(model, width, height, text_scale=1.0, view=None)  # view: None fits the model
     # viewpoint=Viewpoint.FRONT, SIDE, TOP: a space model along one of its axes; geometry.view keeps it
-    sheet_drawing(geometry, title_lines(model), selected=None)  # at rest, with grid, labels, title block
+    sheet_drawing(geometry, title_lines(model))  # at rest, with grid, labels, title block
     part_at(geometry, x, y)                         # id of the body, link or support under a point, or None
     geometry.view.panned(dx, dy), .zoomed(factor, x, y)  # for the next sheet_geometry
 

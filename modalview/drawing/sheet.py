@@ -16,7 +16,7 @@ from modalview.drawing.model_items import (
     part_items,
     train_items,
 )
-from modalview.drawing.primitives import Box, Drawing, Floats, Item, Role
+from modalview.drawing.primitives import Drawing, Floats
 from modalview.drawing.view import View, Viewpoint
 from modalview.model.parts import Model, Motion
 
@@ -77,16 +77,14 @@ def sheet_geometry(
     return lettered(bare_geometry(model, (width, height), area, view or viewpoint, 1.0, text_scale))
 
 
-def sheet_drawing(
-    geometry: SheetGeometry, title: TitleLines | None, *, selected: str | None = None
-) -> Drawing:
-    """Return the sheet at rest, with the selected part framed."""
+def sheet_drawing(geometry: SheetGeometry, title: TitleLines | None) -> Drawing:
+    """Return the sheet at rest, without what a hand does over it."""
     items = paper_items(geometry, title) + ground_items(geometry) + axis_items(geometry)
     items += train_items(geometry)
     parts, leaders = part_items(geometry, geometry.points.rest), leader_items(geometry)
     # Seen straight, what is written belongs to links before or behind bodies: leaders end on top of them.
     items += parts + leaders if geometry.view.straight else leaders + parts
-    items += (*geometry.labels, *label_items(geometry), *_frame(geometry, selected))
+    items += (*geometry.labels, *label_items(geometry))
     return sheet_of(items, geometry.width, geometry.height, geometry.text_scale)
 
 
@@ -143,18 +141,3 @@ def _link_or_support(geometry: SheetGeometry, number: int, share: Floats, off: F
         if beyond and geometry.link_bodies[number, side] == GROUND and end.support is not None:
             return end.support
     return link.id if off[number] <= NEAR_LINK else None
-
-
-def _frame(geometry: SheetGeometry, selected: str | None) -> tuple[Item, ...]:
-    for number, body in enumerate(geometry.model.bodies):
-        if body.id == selected:
-            x1, y1, x2, y2 = geometry.boxes[number].tolist()
-            return (Box(x1 - 5, y1 - 5, x2 - x1 + 10, y2 - y1 + 10, 6.0, Role.ACCENT, None, 1.8),)
-    for number, link in enumerate(geometry.model.links):
-        if selected == link.id or (
-            selected is not None and selected in (link.from_.support, link.to.support)
-        ):
-            x1, y1 = (geometry.link_ends[number].min(axis=0) - 13.0).tolist()
-            x2, y2 = (geometry.link_ends[number].max(axis=0) + 13.0).tolist()
-            return (Box(x1, y1, x2 - x1, y2 - y1, 6.0, Role.ACCENT, None, 1.8),)
-    return ()

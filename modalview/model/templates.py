@@ -184,10 +184,6 @@ def _box(width: float, height: float) -> Drawn:
     return Drawn(width=wide, height=high)
 
 
-def _offset(*numbers: float) -> tuple[object, ...]:
-    return point_of(numbers)
-
-
 def _chain(given: _Given) -> Model:
     number, mass, stiffness = given.count("number"), given.value("mass"), given.value("stiffness")
     both = given.count("held") == 2

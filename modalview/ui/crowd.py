@@ -36,7 +36,6 @@ class Moment:
     frozen : bool
         Standing still, with arrows.
     title : drawing.furniture.TitleLines or None
-    selected : str or None
     size : QSize
     ratio : float
         Pixels of the screen to one of the window.
@@ -48,7 +47,6 @@ class Moment:
     factor: complex
     frozen: bool
     title: Any
-    selected: str | None
     size: QSize
     ratio: float
     theme: Theme
@@ -57,7 +55,7 @@ class Moment:
     def still(self) -> tuple[Any, ...]:
         """What decides the part of the picture that does not move."""
         moves = self.posed is not None
-        return self.geometry, moves, self.title, self.selected, self.size, self.ratio, self.theme
+        return self.geometry, moves, self.title, self.size, self.ratio, self.theme
 
 
 class CrowdPainter(QObject):
@@ -120,7 +118,7 @@ def _painted(moment: Moment, still: QImage | None) -> tuple[QImage, QImage, floa
     to = {"size": moment.size, "ratio": moment.ratio, "theme": moment.theme}
     if still is None:
         if moment.posed is None:
-            drawing = sheet.sheet_drawing(moment.geometry, moment.title, selected=moment.selected)
+            drawing = sheet.sheet_drawing(moment.geometry, moment.title)
         else:
             drawing = motion.still_drawing(moment.geometry, moment.title)
         still = image_of(drawing, **to)

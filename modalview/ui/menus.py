@@ -223,7 +223,7 @@ _ELSEWHERE = (
     ("Go from meeting to meeting", "left and right arrow key in the chart of speeds"),
     ("Zoom on the sheet", "wheel, two fingers drawn apart, + and -"),
     ("Move the sheet", "arrow keys, middle button, two fingers, or Space held and left button"),
-    *((f"Tool: {tool.label}", f"{tool.key} on the sheet") for tool in TOOLS),
+    *((f"Tool: {tool.name}", f"{tool.key} on the sheet") for tool in TOOLS),
     ("Keep a tool in hand", "Shift with its key"),
     ("Move the cross of a tool / what is chosen", "arrow keys; ten steps with Shift"),
     ("Lead the cross to the next part / choose the next part", "Page Down, Page Up"),

@@ -60,7 +60,6 @@ class Sheet(QWidget):
         self._rest: QPixmap | None = None
         self._theme: Theme = LIGHT
         self._text_scale = 1.0
-        self._selected: str | None = None
         self.amplitude = 0.6
         self._timer = QTimer(self, interval=FRAME_MS, timerType=Qt.TimerType.PreciseTimer)
         self._timer.timeout.connect(self.update)
@@ -94,7 +93,6 @@ class Sheet(QWidget):
         self._model, self._title = model, title
         if fit:
             self._view = None
-            self._selected = None
             self._crowd.forget()
             self._geometry = None if len(model.bodies) > crowd.AT_ONCE else self._geometry
             self._rebuild()
@@ -148,13 +146,6 @@ class Sheet(QWidget):
         """Set how far the mode moves, 0..1."""
         self.amplitude = share
         self.update()
-
-    def select(self, part: str | None) -> None:
-        """Mark a part."""
-        if part != self._selected:
-            self._selected = part
-            self._rest = None
-            self.update()
 
     @property
     def geometry(self) -> Any:
@@ -270,7 +261,7 @@ class Sheet(QWidget):
         if self._posed is not None:
             drawing = motion.still_drawing(self._geometry, self._title)
         else:
-            drawing = sheet.sheet_drawing(self._geometry, self._title, selected=self._selected)
+            drawing = sheet.sheet_drawing(self._geometry, self._title)
         return painted(drawing, self, self._theme)
 
     def paintEvent(self, event: QPaintEvent) -> None:  # noqa: N802  (Qt's name)
@@ -327,7 +318,6 @@ class Sheet(QWidget):
             factor=self._factor() if self._posed is not None else 0.0,
             frozen=not self._swing.running,
             title=self._title,
-            selected=self._selected,
             size=self.size(),
             ratio=self.devicePixelRatioF(),
             theme=self._theme,

@@ -5,9 +5,10 @@ import random
 import numpy as np
 import pytest
 
-from modalview.drawing.furniture import title_lines
+from modalview.drawing.furniture import sheet_of, title_lines
 from modalview.drawing.modepicture import mode_geometry, mode_picture
 from modalview.drawing.motion import moved, pose
+from modalview.drawing.overlay import chosen_items
 from modalview.drawing.primitives import Circles, Drawing, Lines, Polygons
 from modalview.drawing.sheet import part_at, sheet_drawing, sheet_geometry
 from modalview.drawing.view import STRAIGHT
@@ -125,13 +126,15 @@ def test_any_model_can_be_drawn_and_moved(seed: int, motion: Motion):
     shape = np.random.default_rng(seed).normal(size=(len(model.bodies), 6))
     for size in ((700, 500), (120, 90)):
         geometry = sheet_geometry(model, *size)
-        assert_finite(sheet_drawing(geometry, title_lines(model), selected="l0"))
+        assert_finite(sheet_drawing(geometry, title_lines(model)))
+        assert_finite(sheet_of(chosen_items(geometry, ("l0",)), geometry.width, geometry.height, 1.0))
         assert_finite(moved(geometry, shape, 1.0, 0.0))
         known = {part.id for part in (*model.bodies, *model.links, *model.supports)}
         assert part_at(geometry, *geometry.boxes[0, :2]) in known
     for viewpoint in STRAIGHT if motion is Motion.SPACE else ():
         geometry = sheet_geometry(model, 700, 500, viewpoint=viewpoint)
-        assert_finite(sheet_drawing(geometry, title_lines(model), selected="l0"))
+        assert_finite(sheet_drawing(geometry, title_lines(model)))
+        assert_finite(sheet_of(chosen_items(geometry, ("l0",)), geometry.width, geometry.height, 1.0))
         assert_finite(moved(geometry, shape, 1.0, 0.0))
     small = mode_geometry(model, 200, 90)
     assert_finite(mode_picture(small, pose(small, shape), 1.0))

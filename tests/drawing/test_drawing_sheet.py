@@ -7,6 +7,7 @@ from modalview.drawing.excitations import pushes
 from modalview.drawing.furniture import MARGIN, title_block, title_lines, title_size
 from modalview.drawing.labels import extent
 from modalview.drawing.lettering import USUAL
+from modalview.drawing.overlay import chosen_items
 from modalview.drawing.primitives import Box, Drawing, Lines, Role, Text
 from modalview.drawing.sheet import SheetGeometry, part_at, sheet_drawing, sheet_geometry
 from modalview.model.adding import add_body, add_link
@@ -197,11 +198,11 @@ def test_a_point_of_the_sheet_names_its_part(tower_model: Model):
     assert part_at(geometry, 3, 3) is None
 
 
-def test_the_selected_part_is_framed(tower_model: Model):
+def test_every_chosen_part_is_framed_and_a_single_one_has_handles(tower_model: Model):
     geometry = sheet_geometry(tower_model, 720, 540)
-    plain = len(sheet_drawing(geometry, None).items)
-    for part in ("left", "k0", "s"):
-        assert len(sheet_drawing(geometry, None, selected=part).items) == plain + 1
+    for part, grips in (("left", 8), ("k0", 2), ("s", 0)):
+        assert len(chosen_items(geometry, (part,))) == 1 + grips
+    assert len(chosen_items(geometry, ("left", "k0", "s"))) == 3
 
 
 def test_a_moved_view_moves_every_point(plane_model: Model):

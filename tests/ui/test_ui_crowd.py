@@ -39,9 +39,11 @@ def test_a_frame_of_another_moment_follows(crowded, qtbot):
 
 
 def test_what_is_chosen_is_framed(crowded, qtbot):
-    before = pixels(crowded.sheet.grab().toImage())
     crowded.sheet.show_mode(None)
-    crowded.sheet.select("base")
+    crowded.sheet.repaint()
+    qtbot.waitUntil(lambda: crowded.sheet.settled)
+    before = pixels(crowded.sheet.grab().toImage())
+    crowded.sketching.hand.choose(("base",))
     crowded.sheet.repaint()
     qtbot.waitUntil(lambda: crowded.sheet.settled)
     assert (pixels(crowded.sheet.grab().toImage()) != before).any()

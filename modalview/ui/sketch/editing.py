@@ -104,24 +104,17 @@ class Editing(QObject):
     def duplicate(self) -> None:
         """Double what is chosen, beside it."""
         hand = self._hand
-        made: list[tuple[str, ...]] = []
-
-        def double(model: Model) -> Model:
-            after, ids = duplicated(model, hand.chosen, self._step(ASIDE))
-            made.append(ids)
-            return after
-
         if not hand.chosen or not hand.ready:
             hand.say("Choose a part first; then it can be doubled.")
             return
         hand.hold_view()
         try:
-            after = double(hand.placed_model())
+            after, ids = duplicated(hand.placed_model(), hand.chosen, self._step(ASIDE))
         except InputError as error:
             hand.say(str(error))
             return
         if hand.change(after, f"Duplicate {hand.named(hand.chosen)}"):
-            hand.choose(made[0])
+            hand.choose(ids)
 
     def _step(self, steps: int) -> tuple[float, ...]:
         """Return so many steps of the grid across and down the sheet, in metres."""

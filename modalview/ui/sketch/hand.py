@@ -296,7 +296,7 @@ class Hand(QObject):
             self.cursor = None
         self._sheet.setCursor(Qt.CursorShape.ArrowCursor if name == "choose" else Qt.CursorShape.CrossCursor)
         self.tool_changed.emit(name)
-        self.say("" if name == "choose" else f"{kind.label.capitalize()}: {kind.hint}. Esc puts it away.")
+        self.say("" if name == "choose" else f"{kind.name.capitalize()}: {kind.hint}. Esc puts it away.")
 
     @property
     def tool(self) -> Tool:

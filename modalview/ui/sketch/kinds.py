@@ -33,11 +33,6 @@ class ToolKind:
     motions: tuple[Motion, ...]
     family: str
 
-    @property
-    def label(self) -> str:
-        """Its name on the palette."""
-        return self.name
-
 
 def _link(name: str, key: str, hint: str) -> ToolKind:
     motions = tuple(motion for motion in Motion if LINK_KINDS[name] in LINKS_IN[motion])

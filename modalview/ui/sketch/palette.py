@@ -23,9 +23,9 @@ class ToolButton(QToolButton):
         self.setText(kind.key)
         self.setToolButtonStyle(Qt.ToolButtonStyle.ToolButtonTextBesideIcon)
         self.setToolTip(
-            f"{kind.label.capitalize()} ({kind.key})\n{kind.hint}.\nDouble-click keeps the tool in hand."
+            f"{kind.name.capitalize()} ({kind.key})\n{kind.hint}.\nDouble-click keeps the tool in hand."
         )
-        self.setAccessibleName(f"Tool: {kind.label}")
+        self.setAccessibleName(f"Tool: {kind.name}")
         self.setAccessibleDescription(f"{kind.hint}. Key {kind.key}.")
         self.setFocusPolicy(Qt.FocusPolicy.TabFocus)
 

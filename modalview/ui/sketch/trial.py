@@ -29,7 +29,7 @@ class Trial:
             self._document.replace_model(model)
             self._shown = model
 
-    def settle(self, text: str, *, merge: object = None) -> str:
+    def settle(self, text: str) -> str:
         """Make what is shown the one edit; return why not, or nothing."""
         if not self.stands:
             return "the model was changed meanwhile; nothing more was done"
@@ -38,7 +38,7 @@ class Trial:
             self.give_back()
             return ""
         try:
-            edit = checked_edit(self._before, model, text, merge=merge)
+            edit = checked_edit(self._before, model, text)
         except InputError as error:
             self.give_back()
             return str(error)
